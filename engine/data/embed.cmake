@@ -1,0 +1,15 @@
+# cmake -DOUT=<file.cpp> -DROOT=<folder> -DTABLES=<a.csv|b.csv> -P embed.cmake
+# Turns the tables into one C++ source, so that the program carries its constants with it.
+string(REPLACE "|" ";" tables "${TABLES}")
+list(SORT tables)
+set(source "// Made by engine/data/embed.cmake from the tables; do not edit.\n#include <span>\n#include <string_view>\n\nnamespace bathwright::data {\nstruct EmbeddedTable { std::string_view name, text; };\nextern const std::span<const EmbeddedTable> embedded_tables;\nnamespace {\nconst EmbeddedTable tables[] = {\n")
+foreach(table IN LISTS tables)
+  file(READ "${ROOT}/${table}" text)
+  string(FIND "${text}" ")~bw~" clash)
+  if(NOT clash EQUAL -1)
+    message(FATAL_ERROR "${table} holds the text that ends an embedded table")
+  endif()
+  string(APPEND source "    {\"${table}\", R\"~bw~(${text})~bw~\"},\n")
+endforeach()
+string(APPEND source "};\n}  // namespace\nconst std::span<const EmbeddedTable> embedded_tables{tables};\n}  // namespace bathwright::data\n")
+file(WRITE "${OUT}" "${source}")
