@@ -1,0 +1,57 @@
+// What stands in the chemical store: the substance, its hydrate, purity and density, and its hazards.
+// Hazard texts are a planning aid; the supplier's safety data sheet decides.
+#pragma once
+
+#include <bathwright/base/result.hpp>
+#include <bathwright/matter/formula.hpp>
+#include <limits>
+#include <string>
+#include <string_view>
+#include <vector>
+
+namespace bathwright::matter {
+
+struct StockChemical {
+  std::string id;    ///< "nickel-sulfate"
+  std::string name;  ///< "nickel sulfate hexahydrate"
+  std::string formula;
+  bool liquid = false;
+  double assay = 1;                                            ///< kg of `formula` per kg of product
+  double kg_per_L = std::numeric_limits<double>::quiet_NaN();  ///< liquids at 20 degC; NaN for solids
+  std::vector<std::string> hazard_statements;                  ///< codes, "H314"
+  std::vector<std::string> incompatible_with;                  ///< ids of Incompatibility
+  std::vector<std::string> cautions;
+  std::string storage, note, source;
+
+  /// mol of `formula` in a kg of product: assay * 1000 / molar mass.
+  [[nodiscard]] double mol_per_kg() const;
+  /// kg of water in a kg of product beside `formula`: the rest of a liquid is water, the rest of a solid is
+  /// taken as inert. Crystal water belongs to `formula`.
+  [[nodiscard]] double water_kg_per_kg() const { return liquid ? 1 - assay : 0; }
+};
+
+/// Two kinds of substance that must not meet, and what happens when they do.
+struct Incompatibility {
+  std::string id, a, b, result;
+  std::string severity;  ///< "stop" or "warn"
+  std::string practice, source;
+};
+
+class StockCatalogue {
+ public:
+  /// The catalogue compiled into the program (matter/stock_chemicals.csv and its two companions).
+  static const StockCatalogue& built_in();
+
+  [[nodiscard]] const StockChemical* find(std::string_view id) const;  ///< null where there is none
+  [[nodiscard]] std::vector<std::string> ids() const;                  ///< sorted
+  [[nodiscard]] std::string hazard_text(std::string_view code) const;  ///< "" for an unknown code
+  [[nodiscard]] const Incompatibility* incompatibility(std::string_view id) const;
+  [[nodiscard]] const std::vector<Incompatibility>& incompatibilities() const { return incompatibilities_; }
+
+ private:
+  std::vector<StockChemical> chemicals_;  // sorted by id
+  std::vector<std::pair<std::string, std::string>> hazards_;
+  std::vector<Incompatibility> incompatibilities_;
+};
+
+}  // namespace bathwright::matter
