@@ -63,6 +63,11 @@ bool is_standard(const std::string& header) {
   return header.find_first_of("/.") == std::string::npos || c_headers.count(header) > 0;
 }
 
+/// Both relative to the same folder and in normal form.
+bool is_inside(const fs::path& file, const fs::path& folder) {
+  return *file.lexically_relative(folder).begin() != "..";
+}
+
 /// "units" of "bathwright/units/read.hpp"; empty for any other header.
 std::string engine_part(const std::string& header) {
   static const std::regex pattern("^bathwright/([^/]+)/");
@@ -140,9 +145,9 @@ class Inspector {
   void check(const Home& home, const fs::path& file, const Line& line, const Include& include) {
     if (include.quoted) {
       const fs::path target = (file.parent_path() / include.path).lexically_normal();
-      if (*target.lexically_relative(home.folder).begin() == "..")
-        fault(line.where, include.path + " leaves " + home.folder.string());
-      return;
+      if (!is_inside(target, home.folder))
+        return fault(line.where, include.path + " leaves " + home.folder.string());
+      if (fs::exists(root_ / target)) return;  // otherwise the compiler goes on as with <...>
     }
     const std::string used = engine_part(include.path);
     const bool is_library =
@@ -156,8 +161,7 @@ class Inspector {
       fault(line.where, part + " includes " + include.path + ", but " + used + " does not stand above it");
     else if (!used.empty() && !reach_[part].count(used))
       fault(line.where, part + " includes " + include.path + ", but its USES do not reach " + used);
-    const fs::path public_headers = home.folder / "include";
-    if (is_library && *file.lexically_relative(public_headers).begin() != "..")
+    if (is_library && is_inside(file, home.folder / "include"))
       fault(line.where, "a public header names the library " + include.path);
   }
 
