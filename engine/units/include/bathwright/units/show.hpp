@@ -16,36 +16,27 @@ inline constexpr int usual_digits =
 /// No exponent for 1e-6 <= |value| < 1e15; "nan", "inf" and "-inf" for what is not finite.
 [[nodiscard]] std::string significant(double value, int digits = usual_digits);
 
-/// A number, a space and the unit's symbol. `unit` is any spelling read.hpp accepts for the quantity; with a
-/// unit it does not know, the first in its list is used: the number is never mislabelled.
-[[nodiscard]] std::string show(Litres, std::string_view unit = "L", int digits = usual_digits);
-[[nodiscard]] std::string show(Kilograms, std::string_view unit = "kg", int digits = usual_digits);
-[[nodiscard]] std::string show(Celsius, std::string_view unit = "degC", int digits = usual_digits);
-[[nodiscard]] std::string show(Decimetres, std::string_view unit = "dm", int digits = usual_digits);
-[[nodiscard]] std::string show(SquareDecimetres, std::string_view unit = "dm2", int digits = usual_digits);
-[[nodiscard]] std::string show(KilogramsPerLitre, std::string_view unit = "kg/L", int digits = usual_digits);
-[[nodiscard]] std::string show(AmperesPerSquareDecimetre, std::string_view unit = "A/dm2",
-                               int digits = usual_digits);
-[[nodiscard]] std::string show(Hours, std::string_view unit = "h", int digits = usual_digits);
-[[nodiscard]] std::string show(MolesPerLitre, std::string_view unit = "mol/L", int digits = usual_digits);
-[[nodiscard]] std::string show(GramsPerLitre, int digits = usual_digits);
-[[nodiscard]] std::string show(Molality, int digits = usual_digits);
-[[nodiscard]] std::string show(GramsPerMole, int digits = usual_digits);
-[[nodiscard]] std::string show(const Concentration&, int digits = usual_digits);
+/// A number, a space and the unit's symbol, for Litres, Kilograms, Celsius, Decimetres, SquareDecimetres,
+/// KilogramsPerLitre, AmperesPerSquareDecimetre, Hours and MolesPerLitre.
+///   unit  any spelling read.hpp accepts for the quantity. Empty or unknown: the base unit, with its own
+///   symbol,
+///         so that a number is never mislabelled.
+template <class UnitTag>
+[[nodiscard]] std::string show(Quantity<UnitTag> q, std::string_view unit = {}, int digits = usual_digits);
 
-/// The value alone, in `unit`, for tables whose column head carries the unit. Same rule for an unknown unit.
-[[nodiscard]] double value_in(Litres, std::string_view unit);
-[[nodiscard]] double value_in(Kilograms, std::string_view unit);
-[[nodiscard]] double value_in(Celsius, std::string_view unit);
-[[nodiscard]] double value_in(Decimetres, std::string_view unit);
-[[nodiscard]] double value_in(SquareDecimetres, std::string_view unit);
-[[nodiscard]] double value_in(KilogramsPerLitre, std::string_view unit);
-[[nodiscard]] double value_in(AmperesPerSquareDecimetre, std::string_view unit);
-[[nodiscard]] double value_in(Hours, std::string_view unit);
-[[nodiscard]] double value_in(MolesPerLitre, std::string_view unit);
+/// The value alone in `unit`, for tables whose column head carries the unit; same types, same rule.
+template <class UnitTag>
+[[nodiscard]] double value_in(Quantity<UnitTag> q, std::string_view unit);
 
-/// The symbols a quantity can be shown in, the base unit first: for menus and for checking a setting.
+/// The symbols such a quantity, or a Concentration, can be shown in, the base unit first: for menus and for
+/// checking a setting.
 template <class Quantity>
 [[nodiscard]] std::span<const std::string_view> symbols();
+
+[[nodiscard]] std::string show(GramsPerLitre c, int digits = usual_digits);
+[[nodiscard]] std::string show(Molality m, int digits = usual_digits);
+[[nodiscard]] std::string show(GramsPerMole m, int digits = usual_digits);
+/// With its equivalents where it is a normality: "0.2000 N (2.000 eq/mol)".
+[[nodiscard]] std::string show(const Concentration& c, int digits = usual_digits);
 
 }  // namespace bathwright::units
