@@ -1,0 +1,195 @@
+#include "database.hpp"
+
+#include <fmt/format.h>
+#include <unistd.h>
+
+#include <cerrno>
+#include <cstring>
+#include <utility>
+
+namespace bathwright::logbook {
+
+namespace fs = std::filesystem;
+
+namespace {
+
+Problem io(const std::string& where, std::string what, std::string try_this) {
+  return {Fault::io, where, std::move(what), "", std::move(try_this)};
+}
+
+fs::path folder_of(const fs::path& path) {
+  return path.has_parent_path() ? path.parent_path() : fs::path(".");
+}
+
+/// SQLite says little about paths it cannot open, so the likely mistakes are looked for first.
+std::optional<Problem> problem_with_path(const fs::path& path, OpenMode mode) {
+  const fs::path folder = folder_of(path);
+  std::error_code error;
+  const fs::file_status folder_status = fs::status(folder, error);
+  if (folder_status.type() == fs::file_type::not_found)
+    return io(path.string(), "the folder " + folder.string() + " does not exist",
+              "make the folder, or check the path");
+  if (fs::exists(folder_status) && !fs::is_directory(folder_status))
+    return io(path.string(), folder.string() + " is a file, not a folder", "check the path");
+  const fs::file_status status = fs::status(path, error);
+  if (fs::is_directory(status))
+    return io(path.string(), "this is a folder, not a logbook file", "name the file in it");
+  if (status.type() == fs::file_type::not_found && mode != OpenMode::create)
+    return io(path.string(), "there is no such file", "check the path, or start a new logbook there");
+  return std::nullopt;
+}
+
+bool writable(const fs::path& path) { return access(path.c_str(), W_OK) == 0; }
+
+/// SQLite reads a log in WAL mode through helper files beside it. A reader that may not write there can still
+/// read a log that was closed properly (no -wal file: all is in the main file), as it stands at this moment.
+bool must_read_as_it_stands(const fs::path& path) {
+  const bool closed = !fs::exists(fs::path(path.string() + "-wal"));
+  return closed && !(writable(path) && writable(folder_of(path)));
+}
+
+std::string file_uri(const fs::path& path, std::string_view query) {
+  std::string uri = "file:";
+  for (const char c : fs::absolute(path).string())
+    uri += c == '%' || c == '?' || c == '#' ? fmt::format("%{:02X}", static_cast<unsigned char>(c))
+                                            : std::string(1, c);
+  return uri.append("?").append(query);
+}
+
+}  // namespace
+
+Statement::Statement(sqlite3* connection, std::string_view sql) {
+  sqlite3_stmt* handle = nullptr;
+  code_ = sqlite3_prepare_v2(connection, sql.data(), static_cast<int>(sql.size()), &handle, nullptr);
+  handle_.reset(handle);
+}
+
+Statement& Statement::bind(int parameter, std::string_view text) {
+  if (handle_) {
+    // A null pointer would bind NULL instead of an empty text.
+    const char* data = text.empty() ? "" : text.data();
+    sqlite3_bind_text(handle_.get(), parameter, data, static_cast<int>(text.size()), SQLITE_TRANSIENT);
+  }
+  return *this;
+}
+
+Statement& Statement::bind(int parameter, std::optional<std::int64_t> number) {
+  if (handle_ && number) sqlite3_bind_int64(handle_.get(), parameter, *number);
+  return *this;
+}
+
+bool Statement::step() {
+  if (handle_) code_ = sqlite3_step(handle_.get());
+  return code_ == SQLITE_ROW;
+}
+
+std::int64_t Statement::integer(int column) const { return sqlite3_column_int64(handle_.get(), column); }
+
+std::optional<std::int64_t> Statement::optional_integer(int column) const {
+  if (sqlite3_column_type(handle_.get(), column) == SQLITE_NULL) return std::nullopt;
+  return integer(column);
+}
+
+std::string Statement::text(int column) const {
+  const auto* data = reinterpret_cast<const char*>(sqlite3_column_text(handle_.get(), column));
+  return data ? std::string(data, static_cast<std::size_t>(sqlite3_column_bytes(handle_.get(), column))) : "";
+}
+
+Database::Database(sqlite3* connection, std::string name, std::chrono::milliseconds wait)
+    : connection_(connection), name_(std::move(name)), wait_(wait) {}
+
+Result<Database> Database::open(const fs::path& path, OpenMode mode, std::chrono::milliseconds wait) {
+  if (auto problem = problem_with_path(path, mode)) return *std::move(problem);
+
+  const bool as_it_stands = mode == OpenMode::read_only && must_read_as_it_stands(path);
+  // A reader, too, asks SQLite for write access where it has it: only then are the helper files cleared away
+  // at the end. query_only keeps it from changing the log.
+  const int flags = SQLITE_OPEN_URI | SQLITE_OPEN_EXRESCODE |
+                    (as_it_stands ? SQLITE_OPEN_READONLY : SQLITE_OPEN_READWRITE) |
+                    (mode == OpenMode::create ? SQLITE_OPEN_CREATE : 0);
+  sqlite3* connection = nullptr;
+  const int code =
+      sqlite3_open_v2(file_uri(path, as_it_stands ? "immutable=1" : "").c_str(), &connection, flags, nullptr);
+  Database database(connection, path.string(), wait);
+  if (code != SQLITE_OK) return database.problem();
+
+  if (mode != OpenMode::read_only && sqlite3_db_readonly(connection, "main") == 1)
+    return io(path.string(), "the file may be read but not written",
+              "ask for write permission, or open it for reading only");
+  sqlite3_busy_timeout(connection, static_cast<int>(wait.count()));
+  if (auto set = database.execute(
+          "PRAGMA synchronous = FULL; PRAGMA foreign_keys = ON; PRAGMA trusted_schema = OFF");
+      !set)
+    return set.problems();
+  if (mode == OpenMode::read_only)
+    if (auto set = database.execute("PRAGMA query_only = ON"); !set) return set.problems();
+  return database;
+}
+
+Database Database::in_memory() {
+  sqlite3* connection = nullptr;
+  sqlite3_open(":memory:", &connection);
+  return Database(connection, ":memory:", {});
+}
+
+Outcome Database::execute(const char* sql) const {
+  if (sqlite3_exec(connection_.get(), sql, nullptr, nullptr, nullptr) != SQLITE_OK) return problem();
+  return Done{};
+}
+
+Problem Database::problem() const {
+  const int extended = sqlite3_extended_errcode(connection_.get());
+  const int system = sqlite3_system_errno(connection_.get());
+  const bool no_space =
+      extended == SQLITE_FULL ||
+      ((extended & 0xFF) == SQLITE_IOERR && (system == ENOSPC || system == EDQUOT || system == EFBIG));
+  if (no_space)
+    return io(name_, "the disk is full; nothing was logged", "free some space, then log the entry again");
+  switch (extended & 0xFF) {
+    case SQLITE_NOTADB:
+      return {Fault::bad_input, name_, "this file is not a logbook", "a logbook file", "check the path"};
+    case SQLITE_CORRUPT:
+      return {Fault::inconsistent_data, name_,
+              fmt::format("the file is damaged ({})", sqlite3_errmsg(connection_.get())), "",
+              "keep a copy of it untouched, check the disk, and go on with the last good backup"};
+    case SQLITE_BUSY:
+    case SQLITE_LOCKED:
+      return io(name_,
+                fmt::format("another program has held the logbook locked for {} s",
+                            std::chrono::duration<double>(wait_).count()),
+                "close the other program or wait until it is done, then try again");
+    case SQLITE_READONLY:
+    case SQLITE_PERM:
+    case SQLITE_AUTH:
+    case SQLITE_CANTOPEN:
+      return io(name_,
+                "the file or its folder may not be written or opened" +
+                    (system != 0 ? fmt::format(" ({})", std::strerror(system)) : std::string()),
+                "ask for permission to the file and its folder, or use another folder");
+    default:
+      return io(name_,
+                fmt::format("the logbook could not be used: {}{}", sqlite3_errmsg(connection_.get()),
+                            (extended & 0xFF) == SQLITE_IOERR && system != 0
+                                ? fmt::format(" ({})", std::strerror(system))
+                                : ""),
+                "check the disk and the file, then try again");
+  }
+}
+
+WriteTransaction::~WriteTransaction() {
+  if (open_) (void)database_.execute("ROLLBACK");
+}
+
+Outcome WriteTransaction::begin() {
+  auto begun = database_.execute("BEGIN IMMEDIATE");
+  open_ = static_cast<bool>(begun);
+  return begun;
+}
+
+Outcome WriteTransaction::commit() {
+  auto committed = database_.execute("COMMIT");
+  if (committed) open_ = false;
+  return committed;
+}
+
+}  // namespace bathwright::logbook

@@ -1,0 +1,103 @@
+#include "entry_rules.hpp"
+
+#include <fmt/format.h>
+
+#include <cstdint>
+#include <nlohmann/json.hpp>
+#include <optional>
+#include <string>
+
+namespace bathwright::logbook {
+namespace {
+
+constexpr std::size_t max_text_bytes = 200;
+constexpr std::size_t max_body_bytes = std::size_t{1} << 20;
+
+/// Takes the first code point off `rest`; nothing when it does not start with well-formed UTF-8 (RFC 3629: no
+/// overlong forms, no surrogates, nothing above U+10FFFF).
+std::optional<char32_t> take_code_point(std::string_view& rest) {
+  const auto byte = [&](std::size_t i) { return static_cast<unsigned char>(rest[i]); };
+  const unsigned char first = byte(0);
+  const std::size_t length = first < 0x80 ? 1 : first < 0xC2 ? 0 : first < 0xE0 ? 2 : first < 0xF0 ? 3 : 4;
+  if (length == 0 || first > 0xF4 || rest.size() < length) return std::nullopt;
+  char32_t point = length == 1 ? first : first & (0x7Fu >> length);
+  for (std::size_t i = 1; i < length; ++i) {
+    if ((byte(i) & 0xC0) != 0x80) return std::nullopt;
+    point = point << 6 | (byte(i) & 0x3Fu);
+  }
+  const bool overlong = (length == 3 && point < 0x800) || (length == 4 && point < 0x10000);
+  if (overlong || (point >= 0xD800 && point <= 0xDFFF) || point > 0x10FFFF) return std::nullopt;
+  rest.remove_prefix(length);
+  return point;
+}
+
+bool is_control(char32_t point) { return point < 0x20 || (point >= 0x7F && point <= 0x9F); }
+
+Problem bad(std::string_view field, std::string what, std::string expected, std::string try_this = {}) {
+  return {Fault::bad_input, std::string(field), std::move(what), std::move(expected), std::move(try_this)};
+}
+
+void check_body(const NewEntry& entry, Problems& problems) {
+  const std::string& body = entry.body;
+  if (body.size() > max_body_bytes) {
+    problems.push_back(bad("body", fmt::format("{} bytes", body.size()), "at most 1 MiB (1048576 bytes)",
+                           "keep large attachments as files and log their names"));
+    return;
+  }
+  // The parser takes a zero byte for the end of its input and would overlook what follows.
+  if (body.find('\0') != std::string::npos || !nlohmann::json::accept(body)) {
+    problems.push_back(bad("body", "not valid JSON", "one JSON value in UTF-8"));
+    return;
+  }
+  if (entry.kind != EntryKind::correction) return;
+  const auto json = nlohmann::json::parse(body);
+  const auto reason = json.find("reason");
+  if (!json.is_object() || reason == json.end() || !reason->is_string() ||
+      reason->get_ref<const std::string&>().empty())
+    problems.push_back(bad("body", "a correction without a reason", "the key \"reason\" with a text",
+                           "say why the earlier entry is wrong"));
+}
+
+void check_corrects(const NewEntry& entry, Problems& problems) {
+  if (entry.kind == EntryKind::correction && !entry.corrects)
+    problems.push_back(
+        bad("corrects", "a correction that names no entry", "the number of the entry it corrects"));
+  if (entry.kind != EntryKind::correction && entry.corrects)
+    problems.push_back(bad(
+        "corrects", fmt::format("entry {} named by an entry of kind {}", *entry.corrects, name(entry.kind)),
+        "nothing here", "log it as a correction"));
+}
+
+}  // namespace
+
+void check_text(std::string_view field, std::string_view text, Presence presence, Problems& problems) {
+  if (text.empty() && presence == Presence::required) problems.push_back(bad(field, "empty", "a name"));
+  if (text.size() > max_text_bytes)
+    problems.push_back(
+        bad(field, fmt::format("{} bytes", text.size()), fmt::format("at most {} bytes", max_text_bytes)));
+  std::string_view rest = text;
+  while (!rest.empty()) {
+    const std::size_t position = text.size() - rest.size();
+    const auto point = take_code_point(rest);
+    if (point && !is_control(*point)) continue;
+    problems.push_back(point ? bad(field,
+                                   fmt::format("control character U+{:04X} at byte {}",
+                                               static_cast<std::uint32_t>(*point), position),
+                                   "printable text on one line")
+                             : bad(field, fmt::format("byte {} is not UTF-8", position), "text in UTF-8"));
+    return;
+  }
+}
+
+Problems check(const NewEntry& entry) {
+  Problems problems;
+  check_text("tank", entry.tank, Presence::required, problems);
+  check_text("shift", entry.shift, Presence::optional, problems);
+  check_text("by", entry.by, Presence::required, problems);
+  check_body(entry, problems);
+  check_corrects(entry, problems);
+  check_text("program", entry.program, Presence::optional, problems);
+  return problems;
+}
+
+}  // namespace bathwright::logbook

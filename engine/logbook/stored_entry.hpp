@@ -1,0 +1,25 @@
+// Entries as rows of the table `entry`.
+#pragma once
+
+#include <string>
+
+#include "bathwright/base/result.hpp"
+#include "bathwright/logbook/entry.hpp"
+#include "database.hpp"
+
+namespace bathwright::logbook {
+
+/// The columns in the order of select_entries, counted from 0.
+namespace column {
+enum : int { seq, kind, tank, shift, at, station, by, body, corrects, program, previous, hash };
+}
+
+/// "SELECT every column FROM entry " with `rest` behind it.
+[[nodiscard]] std::string select_entries(std::string_view rest);
+
+/// The entry in the row a select_entries statement stands on. A kind that is not ours is a problem.
+[[nodiscard]] Result<Entry> read_entry(const Statement& row);
+
+[[nodiscard]] Outcome insert_entry(const Database& database, const Entry& entry);
+
+}  // namespace bathwright::logbook

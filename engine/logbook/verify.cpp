@@ -1,0 +1,115 @@
+#include "verify.hpp"
+
+#include <fmt/format.h>
+
+#include <utility>
+
+#include "chain.hpp"
+#include "schema.hpp"
+#include "stored_entry.hpp"
+
+namespace bathwright::logbook {
+namespace {
+
+/// SQLite's own check of pages, indexes, column types and constraints.
+void check_file(const Database& database, std::vector<Finding>& findings) {
+  constexpr const char* at_most_20_lines = "PRAGMA integrity_check(20)";
+  Statement check = database.prepare(at_most_20_lines);
+  while (check.step())
+    if (check.text(0) != "ok")
+      findings.push_back({FindingKind::unreadable, 0, "the file is damaged: " + check.text(0)});
+  if (check.failed()) findings.push_back({FindingKind::unreadable, 0, database.problem().text()});
+}
+
+class Walk {
+ public:
+  Walk(const Database& database, Verification& report) : database_(database), report_(report) {}
+
+  void all() {
+    Statement rows = database_.prepare(select_entries("ORDER BY seq"));
+    while (rows.step()) visit(rows);
+    if (rows.failed()) find(FindingKind::unreadable, last_seq_, database_.problem().text());
+    report_.head = last_hash_;
+  }
+
+ private:
+  void visit(const Statement& row) {
+    ++report_.entries;
+    const auto entry = read_entry(row);
+    if (!entry) {
+      const std::int64_t seq = row.integer(column::seq);
+      check_sequence(seq);
+      find(FindingKind::changed, seq, entry.problems().front().text());
+      pass(seq, row.text(column::hash), row.text(column::at));
+      return;
+    }
+    const bool in_sequence = check_sequence(entry->seq);
+    if (chain_hash(*entry) != entry->hash)
+      find(FindingKind::changed, entry->seq, fmt::format("entry {} is not as it was logged", entry->seq));
+    if (in_sequence && entry->previous != last_hash_) report_broken_link(*entry);
+    if (entry->at < last_at_)
+      report_.clock_steps.push_back({FindingKind::clock_back, entry->seq,
+                                     fmt::format("entry {} is dated {}, before the {} of entry {}",
+                                                 entry->seq, entry->at, last_at_, last_seq_)});
+    pass(entry->seq, entry->hash, entry->at);
+  }
+
+  /// True when `seq` is the one that comes next.
+  bool check_sequence(std::int64_t seq) {
+    if (seq <= last_seq_)
+      find(FindingKind::reordered, seq,
+           fmt::format("entry number {} stands behind number {}", seq, last_seq_));
+    if (seq > last_seq_ + 1)
+      find(FindingKind::gap, seq,
+           seq == last_seq_ + 2 ? fmt::format("entry {} is missing", last_seq_ + 1)
+                                : fmt::format("entries {} to {} are missing", last_seq_ + 1, seq - 1));
+    return seq == last_seq_ + 1;
+  }
+
+  void report_broken_link(const Entry& entry) {
+    Statement followed = database_.prepare("SELECT seq FROM entry WHERE hash = ?");
+    followed.bind(1, entry.previous);
+    if (followed.step())
+      find(FindingKind::reordered, entry.seq,
+           fmt::format("entry {} was logged behind what is now entry {}, not behind entry {}", entry.seq,
+                       followed.integer(0), last_seq_));
+    else
+      find(FindingKind::link, entry.seq,
+           fmt::format("entry {} was logged behind an entry that is not in the log; entry {} was put in its "
+                       "place or altered",
+                       entry.seq, last_seq_));
+  }
+
+  void find(FindingKind kind, std::int64_t seq, std::string words) {
+    report_.problems.push_back({kind, seq, std::move(words)});
+  }
+
+  void pass(std::int64_t seq, std::string hash, std::string at) {
+    last_seq_ = seq;
+    last_hash_ = std::move(hash);
+    last_at_ = std::move(at);
+  }
+
+  const Database& database_;
+  Verification& report_;
+  std::int64_t last_seq_ = 0;
+  std::string last_hash_ = first_previous();
+  std::string last_at_;
+};
+
+}  // namespace
+
+Verification verify_chain(const Database& database) {
+  Verification report;
+  // One read transaction: entries logged meanwhile by others are left for the next time.
+  if (const auto begun = database.execute("BEGIN"); !begun)
+    report.problems.push_back({FindingKind::unreadable, 0, begun.problems().front().text()});
+  check_file(database, report.problems);
+  check_guards(database, report.problems);
+  Walk(database, report).all();
+  (void)database.execute("COMMIT");
+  report.ok = report.problems.empty();
+  return report;
+}
+
+}  // namespace bathwright::logbook

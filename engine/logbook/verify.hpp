@@ -1,0 +1,11 @@
+// The walk along the hash chain.
+#pragma once
+
+#include "bathwright/logbook/logbook.hpp"
+#include "database.hpp"
+
+namespace bathwright::logbook {
+
+[[nodiscard]] Verification verify_chain(const Database& database);
+
+}  // namespace bathwright::logbook
