@@ -1,0 +1,132 @@
+// What must hold for every row of engine/data/equilibria, whoever adds it. Balance is checked with the
+// parsers of formulae and reactions: tests/engine/speciation/data_balance.cpp.
+#include "rows.hpp"
+
+using bathwright::data::built_in_table;
+using rows::charge;
+using rows::check_filled;
+using rows::check_range;
+using rows::check_unique;
+using rows::check_word;
+using rows::CsvRow;
+using rows::CsvTable;
+using rows::each;
+
+namespace {
+
+CsvTable species() {
+  return built_in_table("equilibria/species.csv",
+                        {"charge", "log10_K", "ionic_strength", "dH_kJ_mol", "dCp_J_molK", "uncertainty"});
+}
+
+CsvTable solids() {
+  return built_in_table("equilibria/solids.csv",
+                        {"log10_K", "dH_kJ_mol", "dCp_J_molK", "uncertainty", "min_C", "max_C"});
+}
+
+/// Bounds that a constant typed in another unit (J for kJ, ln for log10, pK for log K by sign) tends to
+/// break.
+void check_constants(const CsvRow& row, double largest_log10_K, double largest_dH) {
+  check_filled(row, {"reaction", "log10_K", "uncertainty"});
+  check_range(row, "log10_K", -largest_log10_K, largest_log10_K);
+  check_range(row, "dH_kJ_mol", -largest_dH, largest_dH);
+  check_range(row, "dCp_J_molK", -400, 400);
+  check_range(row, "uncertainty", 0.001, 3);
+}
+
+CsvRow only_row(const CsvTable& table, std::string_view name, std::string_view convention) {
+  for (std::size_t i = 0; i < table.size(); ++i)
+    if (table[i]["species"] == name && table[i]["convention"] == convention) return table[i];
+  FAIL("no " << convention << " row for " << name);
+  return table[0];
+}
+
+}  // namespace
+
+TEST_CASE("species: constants of a possible size, a known set and convention", "[unit]") {
+  each(species(), [](const CsvRow& row) {
+    const bool polycation = row["species"].starts_with("Al13");  // 32 protons leave: log K and dH add up
+    check_constants(row, polycation ? 101 : 60, polycation ? 1200 : 400);
+    check_filled(row, {"species", "charge", "ionic_strength"});
+    check_range(row, "ionic_strength", 0, 5);
+    check_word(row, "set", {"main", "zinc chloride", "zincate"});
+    check_word(row, "convention", {"both", "association", "interaction"});
+    if (row["set"] != "main") CHECK(row["convention"] == "interaction");
+    CHECK(row.number("charge") == charge(row["species"]));
+  });
+}
+
+TEST_CASE("species: one row for each set and convention", "[unit]") {
+  check_unique(species(), [](const CsvRow& row) {
+    return std::string(row["species"]) + " | " + std::string(row["set"]) + " | " +
+           std::string(row["convention"]);
+  });
+}
+
+TEST_CASE("species: 'both' excludes a second row of the same set", "[unit]") {
+  std::map<std::string, std::string> for_both;
+  const CsvTable table = species();
+  each(table, [&](const CsvRow& row) {
+    if (row["convention"] == "both")
+      for_both.emplace(std::string(row["species"]) + " | " + std::string(row["set"]), row.where());
+  });
+  each(table, [&](const CsvRow& row) {
+    if (row["convention"] == "both") return;
+    CHECK(for_both.count(std::string(row["species"]) + " | " + std::string(row["set"])) == 0);
+  });
+}
+
+// Pitzer, Roy & Silvester, J. Am. Chem. Soc. 99 (1977) 4930, recalled: ln K2 = -14.0321 + 2825.2/T.
+TEST_CASE("hydrogensulfate for Pitzer models is the partner of the H-SO4 parameters", "[reference]") {
+  const CsvTable table = species();
+  const CsvRow row = only_row(table, "HSO4^-", "interaction");
+  CHECK(row.number("log10_K") ==
+        Approx(-(-14.0321 + 2825.2 / 298.15) / std::log(10.)).margin(5e-5).epsilon(0));
+  CHECK(row.number("dH_kJ_mol") == Approx(8.314463e-3 * 2825.2).margin(5e-3).epsilon(0));
+  CHECK(row.number("dCp_J_molK") == 0);
+}
+
+// CODATA key values (Cox, Wagman & Medvedev 1989): log10 Kw = -13.995, dH = 55.815 kJ/mol at 25 C.
+TEST_CASE("the ion product of water is the key value", "[reference]") {
+  const CsvTable table = species();
+  const CsvRow row = only_row(table, "OH^-", "both");
+  CHECK(row.number("log10_K") == Approx(-13.995).margin(0.001).epsilon(0));
+  CHECK(row.number("dH_kJ_mol") == Approx(55.815).margin(0.02).epsilon(0));
+}
+
+TEST_CASE("solids: constants of a possible size, a sane temperature range, a known set", "[unit]") {
+  each(solids(), [](const CsvRow& row) {
+    check_constants(row, 70, 150);
+    check_filled(row, {"solid", "formula", "min_C", "max_C"});
+    check_range(row, "min_C", 0, 70);
+    check_range(row, "max_C", 25, 100);
+    CHECK(row.number("min_C") <= row.number("max_C"));
+    check_word(row, "set", {"main", "sulfate T", "zincate"});
+    check_word(row, "kinetics", {"", "slow"});
+    CHECK((row["kinetics"] == "slow") == (row["note"].find("slow") != std::string_view::npos));
+  });
+}
+
+TEST_CASE("solids: one row for each phase and set", "[unit]") {
+  check_unique(solids(),
+               [](const CsvRow& row) { return std::string(row["solid"]) + " | " + std::string(row["set"]); });
+}
+
+TEST_CASE("solids: a name begins with its formula", "[unit]") {
+  each(solids(), [](const CsvRow& row) {
+    const bool unknown_water = row["formula"] == "NiHPO3";  // named NiHPO3.xH2O
+    CHECK(row["solid"].starts_with(row["formula"]));
+    if (!unknown_water)
+      CHECK((row["solid"].size() == row["formula"].size() || row["solid"][row["formula"].size()] == ' ' ||
+             row["solid"][row["formula"].size()] == ','));
+  });
+}
+
+TEST_CASE("gases: one row each, constants of a possible size, dissolving gives off heat", "[unit]") {
+  const CsvTable gases = built_in_table("equilibria/gases.csv", {"log10_K", "dH_kJ_mol", "uncertainty"});
+  each(gases, [](const CsvRow& row) {
+    check_constants(row, 7, 80);
+    CHECK(row.number("dH_kJ_mol") < 0);
+  });
+  check_unique(gases, [](const CsvRow& row) { return std::string(row["gas"]); });
+}
