@@ -45,7 +45,7 @@ TEST_CASE("quoted fields hold commas and doubled quotes", "[unit]") {
 
 TEST_CASE("comment and blank lines are skipped but counted, and line ends may be CR LF", "[unit]") {
   const auto table =
-      CsvTable::read("salts.csv", "# units: mol/kg\r\nsalt,value\r\n\r\n# halite\r\nNaCl,6.1\r\n");
+      CsvTable::read("salts.csv", "# units: mol/kg\r\nsalt,value\r\n\n# halite\r\nNaCl,6.1\r\n");
   REQUIRE(table);
   REQUIRE(table->size() == 1);
   CHECK((*table)[0]["value"] == "6.1");
