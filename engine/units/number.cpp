@@ -21,7 +21,7 @@ std::string_view trimmed(std::string_view text) {
 Problem thousands_separator(std::string_view text, std::string_view where) {
   return {Fault::bad_input, std::string(where),
           quoted(text) + " has a thousands separator or more than one comma or point",
-          "one decimal point or comma and no other mark between digits", "write 1234.5 or 1234,5"};
+          "one decimal point or comma and no other mark between digits", "Write 1234.5 or 1234,5."};
 }
 
 }  // namespace

@@ -9,10 +9,12 @@ namespace bathwright::units {
 namespace {
 
 Problem may_be_thousands(const NumberAndUnit& read, std::string_view text, std::string_view where) {
+  const int figures = read.number < 10 ? 4 : read.number < 100 ? 5 : 6;  // three of them behind the comma
   return {Fault::bad_input, std::string(where),
           quoted(text) + ": the comma may be a decimal comma or a thousands separator",
           "a number that reads one way",
-          "write " + significant(read.number, 6) + " or " + significant(*read.with_thousands, 6)};
+          "Write " + significant(read.number, figures) + " or " + significant(*read.with_thousands, figures) +
+              "."};
 }
 
 Problem negative(std::string_view name, std::string_view text, std::string_view where) {
@@ -22,7 +24,7 @@ Problem negative(std::string_view name, std::string_view text, std::string_view 
 
 Problem impossible(std::string_view text, std::string_view where, std::string expected) {
   return {Fault::out_of_range, std::string(where), quoted(text) + " cannot be right", std::move(expected),
-          "check the decimal point and the unit"};
+          "Check the decimal point and the unit."};
 }
 
 // In the base unit of the dimension.
@@ -89,9 +91,9 @@ constexpr double most_equivalents = 12;  // beyond any reaction a bench uses
 
 // The bracket of "0.2 N (2 eq/mol)": equivalents per mole.
 Result<double> read_equivalents(std::string_view bracket, std::string_view text, std::string_view where) {
-  const Problem expected{Fault::bad_input, std::string(where),
-                         quoted(text) + " does not say how many equivalents a mole has",
-                         "a normality as \"0.2 N (2 eq/mol)\"", "or give the molarity in mol/L"};
+  const Problem expected{
+      Fault::bad_input, std::string(where), quoted(text) + " does not say how many equivalents a mole has",
+      "a normality as \"0.2 N (2 eq/mol)\"", "Add the equivalents, or give the molarity in mol/L."};
   if (bracket.empty() || bracket.back() != ')') return expected;
   const auto read = split_number(bracket.substr(1, bracket.size() - 2), where);
   if (!read || read->unit != "eq/mol") return expected;
@@ -138,7 +140,7 @@ Result<double> read_fraction(std::string_view text, std::string_view where) {
   if (read->number > 1) {
     return Problem{Fault::out_of_range, std::string(where), quoted(text) + " is more than the whole",
                    "a share from 0 to 1, or a per cent with its sign",
-                   quoted(significant(read->number, 6) + " %")};
+                   "Did you mean " + quoted(std::string(text) + " %") + "?"};
   }
   return read->number;
 }

@@ -36,8 +36,8 @@ constexpr Unit volumes[] = {
     {"imp gal", "impgallon|impgallons|galimp|ukgal|galuk|imperialgallon", imperial_gallon_L},
     {"fl oz", "flozus|usfloz", us_fluid_ounce_L}};
 constexpr Trap volume_traps[] = {
-    {"gal|gallon|gallons", "which gallon: \"US gal\" (3.785 L) or \"imp gal\" (4.546 L)"},
-    {"oz", "\"fl oz\" for a volume (US), or a mass in \"oz\" where a mass is asked for"}};
+    {"gal|gallon|gallons", "Which gallon? Write \"US gal\" (3.785 L) or \"imp gal\" (4.546 L)."},
+    {"oz", "Write \"fl oz\" for a volume."}};
 
 constexpr Unit masses[] = {{"kg", "", 1},
                            {"g", "gram|grams", 1e-3},
@@ -47,13 +47,13 @@ constexpr Unit masses[] = {{"kg", "", 1},
                            {"oz", "ozav|ounce|ounces", ounce_kg},
                            {"oz tr", "troyoz|troz|ozt", troy_ounce_kg},
                            {"dwt", "pennyweight", pennyweight_kg}};
-constexpr Trap mass_traps[] = {{"ton|tons", "which ton: \"t\" is 1000 kg; a short ton is 2000 lb"},
-                               {"floz", "a mass; for a volume of liquid its density is needed"}};
+constexpr Trap mass_traps[] = {{"ton|tons", "Which ton? Write \"t\" for 1000 kg; a short ton is 2000 lb."},
+                               {"floz", "A fluid ounce is a volume; weigh it, or multiply by its density."}};
 
 constexpr Unit temperatures[] = {{"degC", "C|celsius", 1},
                                  {"degF", "F|fahrenheit", 1 / 1.8, -32 / 1.8},
                                  {"K", "kelvin", 1, -zero_celsius_K}};
-constexpr Trap temperature_traps[] = {{"deg", "which degree: \"degC\" or \"degF\""}};
+constexpr Trap temperature_traps[] = {{"deg", "Which degree? Write \"degC\" or \"degF\"."}};
 
 constexpr Unit densities[] = {{"kg/L", "kg/dm3", 1},
                               {"g/mL", "g/cm3|g/cc", 1},
@@ -90,12 +90,12 @@ constexpr Unit durations[] = {{"h", "hr|hour|hours", 1},
                               {"min", "minute|minutes", 1.0 / 60},
                               {"s", "sec|second|seconds", 1.0 / 3600},
                               {"d", "day|days", 24}};
-constexpr Trap duration_traps[] = {{"m", "\"min\" for minutes"}};
+constexpr Trap duration_traps[] = {{"m", "Write \"min\" for minutes."}};
 
 constexpr Unit molarities[] = {{"mol/L", "M|mol/dm3", 1}, {"mmol/L", "mM|mol/m3", 1e-3}};
 constexpr Trap molarity_traps[] = {
-    {"N", "mol/L; a normality is the molarity times its equivalents: 0.1 N sulfuric acid is 0.05 mol/L"},
-    {"m", "\"mol/L\"; a molality cannot be used for a titrant"}};
+    {"N", "Divide by the equivalents per mole and write mol/L: 0.1 N sulfuric acid is 0.05 mol/L."},
+    {"m", "A molality cannot be used for a titrant; write \"mol/L\"."}};
 
 constexpr Unit fractions[] = {{"%", "percent", 0.01}};
 
@@ -121,11 +121,11 @@ constexpr Unit concentrations[] = {
 static_assert(std::size(concentrations) ==
               static_cast<std::size_t>(ConcentrationUnit::ppm_mass_per_volume) + 1);
 constexpr Trap concentration_traps[] = {
-    {"oz/gal|floz/gal|lb/gal|troyoz/gal|oztr/gal|troz/gal",
-     "which gallon: \"oz/US gal\" or \"oz/imp gal\" (and so for fl oz, lb, oz tr)"},
-    {"%", "which per cent: \"% w/w\" (g per 100 g), \"% w/v\" (g per 100 mL) or \"% v/v\" (mL per 100 mL)"},
-    {"ppm", "which ppm: \"ppm w/w\" (mg per kg of solution) or \"ppm w/v\" (mg per litre)"},
-    {"m", "\"mol/kg\" for a molality, \"mol/L\" for a molarity"}};
+    {"oz/gal|floz/gal|lb/gal|troyoz/gal|oztr/gal|troz/gal", "Which gallon? Write \"US gal\" or \"imp gal\"."},
+    {"%",
+     "Which per cent? Write \"% w/w\" (g per 100 g), \"% w/v\" (g per 100 mL) or \"% v/v\" (mL per 100 mL)."},
+    {"ppm", "Which ppm? Write \"ppm w/w\" (mg per kg of solution) or \"ppm w/v\" (mg per litre)."},
+    {"m", "Write \"mol/kg\" for a molality, \"mol/L\" for a molarity."}};
 
 template <std::size_t n>
 constexpr std::array<std::string_view, n> symbols_of(const Unit (&units)[n]) {
@@ -267,11 +267,11 @@ Result<std::size_t> read_unit(const Dimension& dimension, std::string_view text,
   const std::string folded = fold_unit(text);
   for (const Trap& trap : dimension.traps) {
     if (!is_one_of(folded, trap.spellings)) continue;
-    problem.expected = trap.advice;
+    problem.try_this = trap.advice;
     return problem;
   }
   const std::vector<std::string> symbols(dimension.symbols.begin(), dimension.symbols.end());
-  if (const auto near = nearest(text, symbols)) problem.try_this = quoted(*near);
+  if (const auto near = nearest(text, symbols)) problem.try_this = "Did you mean " + quoted(*near) + "?";
   return problem;
 }
 

@@ -144,7 +144,7 @@ TEST_CASE("a share may stand without a unit, but never above one", "[unit][units
   CHECK(*read_fraction("0.985") == 0.985);
   CHECK(*read_fraction("98,5 %") == Approx(0.985).margin(1e-15).epsilon(0));
   CHECK(*read_fraction("1") == 1);
-  CHECK(message(read_fraction("99")).find("99.0000 %") != std::string::npos);
+  CHECK(message(read_fraction("99")).find("99 %") != std::string::npos);
   CHECK_FALSE(read_fraction("101 %"));
   CHECK_FALSE(read_fraction("-0.1"));
   CHECK_FALSE(read_fraction("0.5 g"));
@@ -187,12 +187,12 @@ TEST_CASE("concentrations that need chemistry are kept as typed", "[unit][units]
 }
 
 TEST_CASE("a word that means two things is asked about", "[failure][units]") {
-  CHECK(message(read_volume("500 gal")).find("which gallon") != std::string::npos);
-  CHECK(message(read_concentration("40 oz/gal")).find("which gallon") != std::string::npos);
-  CHECK(message(read_concentration("50 ppm")).find("which ppm") != std::string::npos);
-  CHECK(message(read_concentration("10 %")).find("which per cent") != std::string::npos);
+  CHECK(message(read_volume("500 gal")).find("Which gallon") != std::string::npos);
+  CHECK(message(read_concentration("40 oz/gal")).find("Which gallon") != std::string::npos);
+  CHECK(message(read_concentration("50 ppm")).find("Which ppm") != std::string::npos);
+  CHECK(message(read_concentration("10 %")).find("Which per cent") != std::string::npos);
   CHECK(message(read_concentration("0.2 N")).find("equivalents") != std::string::npos);
-  CHECK(message(read_mass("2 tons")).find("which ton") != std::string::npos);
+  CHECK(message(read_mass("2 tons")).find("Which ton") != std::string::npos);
   CHECK(message(read_concentration("1 m")).find("mol/kg") != std::string::npos);
 }
 
@@ -211,7 +211,7 @@ TEST_CASE("a thousands separator is never guessed", "[failure][units]") {
     INFO(typed);
     const auto volume = read_volume(typed.back() == 'g' ? typed.substr(0, typed.size() - 2) + "L" : typed);
     REQUIRE_FALSE(volume);
-    CHECK(message(volume).find("rite 1") != std::string::npos);  // says how to write it
+    CHECK(message(volume).find("Write 1") != std::string::npos);  // says how to write it
   }
   CHECK(*read_volume("0,125 L") == Litres{0.125});  // no thousand begins with 0
   CHECK(*read_volume("1,25 L") == Litres{1.25});    // no thousand has two digits behind

@@ -12,12 +12,12 @@ namespace bathwright::matter {
 
 /// What a conversion may need to know. Fill in what is known; a conversion that lacks something says what.
 struct ConcentrationBasis {
-  std::optional<units::GramsPerMole> molar_mass;             ///< of the substance
-  std::optional<units::KilogramsPerLitre> solution_density;  ///< for % w/w and ppm w/w
+  std::optional<units::GramsPerMole> molar_mass = {};             ///< of the substance
+  std::optional<units::KilogramsPerLitre> solution_density = {};  ///< for % w/w and ppm w/w
   std::optional<units::KilogramsPerLitre>
-      product_density;                   ///< of the liquid that is measured out, for mL/L, % v/v
-  std::optional<double> product_assay;   ///< kg of substance per kg of that liquid
-  std::optional<double> water_kg_per_L;  ///< kg of water in a litre of solution, for mol/kg
+      product_density;                        ///< of the liquid that is measured out, for mL/L, % v/v
+  std::optional<double> product_assay = {};   ///< kg of substance per kg of that liquid
+  std::optional<double> water_kg_per_L = {};  ///< kg of water in a litre of solution, for mol/kg
 };
 
 ///   g/L = mol/L * M;  mol/kg * M * water_kg_per_L;  10 * % w/w * rho;  mg/kg * rho / 1000;

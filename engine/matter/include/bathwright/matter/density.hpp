@@ -2,7 +2,6 @@
 // Not for: pure liquids, melts, or solutions with a second solvent.
 #pragma once
 
-#include <array>
 #include <bathwright/base/result.hpp>
 #include <bathwright/units/quantity.hpp>
 #include <span>
@@ -14,6 +13,18 @@ namespace bathwright::matter {
 struct DissolvedSalt {
   std::string formula;   ///< anhydrous, as any spelling of its composition
   double mass_fraction;  ///< kg per kg of solution
+};
+
+/// One row of matter/laliberte_density.csv, and the equation below for it.
+struct SaltCoefficients {
+  double c0 = 0, c1 = 0;                                          ///< kg/m3
+  double c2 = 0;                                                  ///< dimensionless
+  double c3 = 0;                                                  ///< 1/degC
+  double c4 = 0;                                                  ///< degC
+  double lowest_C = 0, highest_C = 0, highest_mass_fraction = 0;  ///< the range of the fit
+
+  /// rho_app in kg/L. solute_fraction: kg of all solutes per kg of solution.
+  [[nodiscard]] double apparent_density(double solute_fraction, units::Celsius t) const;
 };
 
 /// Density of a mixture of salts in water.
@@ -30,9 +41,9 @@ Result<units::KilogramsPerLitre> mixture_density(std::span<const DissolvedSalt> 
 ///   equivalents of salt ij = e_i e_j / E,   e = |z| n,   E = half the sum of all e
 /// which does not depend on order and needs balanced charges (an imbalance is spread smoothly, not refused).
 /// Give it the totals of simple ions (Ni^2+, H^+, SO4^2-), not speciated ones (HSO4^-): the coefficients are
-/// of whole salts and already hold the association. H^+ with OH^- counts as water. What has no coefficients
-/// takes its apparent molar volume from matter/apparent_volume.csv, or else `estimated_L_per_kg`; warnings()
-/// names it.
+/// of whole salts and already hold the association. H^+ with OH^- counts as water: give the excess of one of
+/// them. What has no coefficients takes its apparent molar volume from matter/apparent_volume.csv, or else
+/// `estimated_L_per_kg`; warnings() names it.
 class SolutionDensity {
  public:
   /// Apparent volume of a solute nothing is known of: salts in water take 0.3 to 0.6 L per kg. From memory.
@@ -63,20 +74,20 @@ class SolutionDensity {
                                                         units::Celsius t) const;
 
  private:
-  struct Solute {  // a salt made of two of the ions, or a neutral substance
+  struct Solute {  // a salt of two of the ions, or a neutral substance
+    enum class Volume { fitted, constant, water };
     std::string formula;
-    int cation = -1;  // indices into the species; a neutral substance has only the first
-    int anion = -1;
-    double kg_per_unit = 0;  // per equivalent of a salt, per mol of a neutral substance
-    enum class Kind { fitted, constant_volume, estimated, water } kind = Kind::estimated;
-    double litres_per_kg = estimated_L_per_kg;  // where not fitted
-    std::array<double, 5> c{};                  // where fitted
-    double lowest_C = 0, highest_C = 0, highest_mass_fraction = 0;
+    int first = 0;           ///< index of the species: the cation, or the neutral substance
+    int anion = -1;          ///< -1 for a neutral substance
+    double kg_per_unit = 0;  ///< per equivalent of a salt, per mol of a neutral substance
+    Volume volume = Volume::constant;
+    double litres_per_kg = estimated_L_per_kg;  ///< where constant
+    bool estimated = false;                     ///< where constant, and only guessed
+    SaltCoefficients fit{};                     ///< where fitted
   };
-  struct Amounts;
 
   [[nodiscard]] double half_of_equivalents(std::span<const double> mol) const;
-  [[nodiscard]] double solute_kg(const Solute& solute, std::span<const double> mol, double equivalents) const;
+  [[nodiscard]] double solute_kg(const Solute& solute, std::span<const double> mol, double half) const;
 
   std::vector<double> kg_per_mol_;        // of each species
   std::vector<double> charge_magnitude_;  // of each species

@@ -30,6 +30,10 @@ class Formula {
   /// bracket, an empty text or part, a bad charge, a count of 0 or above 10000, a text longer than 200 bytes.
   static Result<Formula> parse(std::string_view text, std::string_view where = {});
 
+  /// The neutral salt of two ions, in the least whole numbers: Al^3+ and SO4^2- give Al2(SO4)3.
+  /// The first must be a cation, the second an anion.
+  static Formula salt(const Formula& cation, const Formula& anion);
+
   [[nodiscard]] const std::string& text() const { return text_; }
   [[nodiscard]] const std::vector<Atom>& atoms() const { return atoms_; }  ///< sorted by atomic number
   [[nodiscard]] double count(std::string_view element) const;              ///< 0 where it has none

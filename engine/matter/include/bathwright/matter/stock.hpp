@@ -7,6 +7,7 @@
 #include <limits>
 #include <string>
 #include <string_view>
+#include <utility>
 #include <vector>
 
 namespace bathwright::matter {
@@ -33,7 +34,7 @@ struct StockChemical {
 /// Two kinds of substance that must not meet, and what happens when they do.
 struct Incompatibility {
   std::string id, a, b, result;
-  std::string severity;  ///< "stop" or "warn"
+  std::string severity;  ///< "stop", "warn" or "info"
   std::string practice, source;
 };
 

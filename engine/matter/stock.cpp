@@ -1,0 +1,90 @@
+#include <algorithm>
+#include <bathwright/data/tables.hpp>
+#include <bathwright/matter/stock.hpp>
+#include <cassert>
+
+namespace bathwright::matter {
+namespace {
+
+std::vector<std::string> split_at_bars(std::string_view field) {
+  std::vector<std::string> parts;
+  while (!field.empty()) {
+    const std::size_t bar = field.find('|');
+    parts.emplace_back(field.substr(0, bar));
+    field.remove_prefix(bar == field.npos ? field.size() : bar + 1);
+  }
+  return parts;
+}
+
+StockChemical chemical_of(const data::CsvRow& row) {
+  StockChemical c;
+  c.id = row["id"];
+  c.name = row["name"];
+  c.formula = row["formula"];
+  c.liquid = row["liquid"] == "yes";
+  c.assay = row.number("assay");
+  c.kg_per_L = row.number("kg_per_L");
+  c.hazard_statements = split_at_bars(row["hazard_statements"]);
+  c.incompatible_with = split_at_bars(row["incompatible_with"]);
+  c.cautions = split_at_bars(row["cautions"]);
+  c.storage = row["storage"];
+  c.note = row["note"];
+  c.source = row["source"];
+  return c;
+}
+
+template <class T>
+const T* find_by_id(const std::vector<T>& all, std::string_view id) {
+  const auto found = std::ranges::find(all, id, &T::id);
+  return found == all.end() ? nullptr : &*found;
+}
+
+}  // namespace
+
+double StockChemical::mol_per_kg() const {
+  const auto parsed = Formula::parse(formula);
+  assert(parsed);  // a test reads every formula of the catalogue
+  return assay * 1000 / parsed->molar_mass().v;
+}
+
+const StockCatalogue& StockCatalogue::built_in() {
+  static const StockCatalogue catalogue = [] {
+    StockCatalogue c;
+    const auto chemicals = data::built_in_table("matter/stock_chemicals.csv", {"assay", "kg_per_L"});
+    for (std::size_t i = 0; i < chemicals.size(); ++i) c.chemicals_.push_back(chemical_of(chemicals[i]));
+    std::ranges::sort(c.chemicals_, {}, &StockChemical::id);
+    const auto hazards = data::built_in_table("matter/hazard_statements.csv", {});
+    for (std::size_t i = 0; i < hazards.size(); ++i)
+      c.hazards_.emplace_back(hazards[i]["code"], hazards[i]["text"]);
+    const auto pairs = data::built_in_table("matter/incompatibility.csv", {});
+    for (std::size_t i = 0; i < pairs.size(); ++i) {
+      const auto row = pairs[i];
+      const auto text = [&](std::string_view column) { return std::string(row[column]); };
+      c.incompatibilities_.push_back({text("id"), text("a"), text("b"), text("result"), text("severity"),
+                                      text("practice"), text("source")});
+    }
+    return c;
+  }();
+  return catalogue;
+}
+
+const StockChemical* StockCatalogue::find(std::string_view id) const { return find_by_id(chemicals_, id); }
+
+std::vector<std::string> StockCatalogue::ids() const {
+  std::vector<std::string> all;
+  for (const StockChemical& c : chemicals_) all.push_back(c.id);
+  return all;
+}
+
+std::string StockCatalogue::hazard_text(std::string_view code) const {
+  for (const auto& [known, text] : hazards_) {
+    if (known == code) return text;
+  }
+  return "";
+}
+
+const Incompatibility* StockCatalogue::incompatibility(std::string_view id) const {
+  return find_by_id(incompatibilities_, id);
+}
+
+}  // namespace bathwright::matter
