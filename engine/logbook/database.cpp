@@ -56,6 +56,17 @@ std::string file_uri(const fs::path& path, std::string_view query) {
   return uri.append("?").append(query);
 }
 
+/// After a failed write: whether a quota or a limit on the file's size was the cause. SQLite itself tells
+/// only the full disk (ENOSPC) from other failures, and keeps no system error for a failed COMMIT but in the
+/// file.
+bool no_space_for_log(sqlite3* connection) {
+  sqlite3_file* log = nullptr;
+  sqlite3_file_control(connection, "main", SQLITE_FCNTL_JOURNAL_POINTER, &log);
+  int error = 0;
+  if (log && log->pMethods) log->pMethods->xFileControl(log, SQLITE_FCNTL_LAST_ERRNO, &error);
+  return error == EDQUOT || error == EFBIG;
+}
+
 }  // namespace
 
 Statement::Statement(sqlite3* connection, std::string_view sql) {
@@ -140,10 +151,7 @@ Outcome Database::execute(const char* sql) const {
 Problem Database::problem() const {
   const int extended = sqlite3_extended_errcode(connection_.get());
   const int system = sqlite3_system_errno(connection_.get());
-  const bool no_space =
-      extended == SQLITE_FULL ||
-      ((extended & 0xFF) == SQLITE_IOERR && (system == ENOSPC || system == EDQUOT || system == EFBIG));
-  if (no_space)
+  if (extended == SQLITE_FULL || (extended == SQLITE_IOERR_WRITE && no_space_for_log(connection_.get())))
     return io(name_, "the disk is full; nothing was logged", "free some space, then log the entry again");
   switch (extended & 0xFF) {
     case SQLITE_NOTADB:

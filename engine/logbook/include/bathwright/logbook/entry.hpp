@@ -27,13 +27,12 @@ enum class EntryKind { analysis, plan, slip, addition, level, ampere_hours, dump
 /// An entry before it is logged. Texts are UTF-8 without control characters, at most 200 bytes.
 struct NewEntry {
   EntryKind kind = EntryKind::note;
-  std::string tank;   ///< the tank's identifier; not empty
-  std::string shift;  ///< the shift's name; may be empty
-  std::string by;     ///< who signs; not empty
-  std::string body;   ///< canonical JSON text, at most 1 MiB; a correction gives "reason"
-  std::optional<std::int64_t>
-      corrects;         ///< the entry of the same tank that a correction, and only it, corrects
-  std::string program;  ///< name and version of the program that made the entry
+  std::string tank{};   ///< the tank's identifier; not empty
+  std::string shift{};  ///< the shift's name; may be empty
+  std::string by{};     ///< who signs; not empty
+  std::string body{};   ///< canonical JSON text, at most 1 MiB; a correction gives "reason"
+  std::optional<std::int64_t> corrects{};  ///< corrections only: an entry of the same tank
+  std::string program{};                   ///< name and version of the program that made the entry
 };
 
 /// An entry as it stands in the log.

@@ -30,14 +30,14 @@ struct OpenSettings {
 
 /// Which entries to list; what is left at its default does not restrict.
 struct Filter {
-  std::string tank;               ///< exactly this tank
-  std::optional<EntryKind> kind;  ///< exactly this kind
-  std::optional<UtcTime> from;    ///< wall clock at or after
-  std::optional<UtcTime> to;      ///< wall clock before
-  std::string text;               ///< found in body, by or shift; case of A to Z ignored
-  std::int64_t after_seq = 0;     ///< go on behind this entry, in the order of the list; 0 starts at its head
-  std::size_t limit = 0;          ///< at most so many; 0 lists all
-  bool newest_first = false;      ///< order by falling instead of rising sequence
+  std::string tank{};               ///< exactly this tank
+  std::optional<EntryKind> kind{};  ///< exactly this kind
+  std::optional<UtcTime> from{};    ///< wall clock at or after
+  std::optional<UtcTime> to{};      ///< wall clock before
+  std::string text{};               ///< found in body, by or shift; case of A to Z ignored
+  std::int64_t after_seq = 0;  ///< go on behind this entry, in the order of the list; 0 starts at its head
+  std::size_t limit = 0;       ///< at most so many; 0 lists all
+  bool newest_first = false;   ///< order by falling instead of rising sequence
 };
 
 enum class FindingKind {
