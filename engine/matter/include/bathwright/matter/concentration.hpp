@@ -14,8 +14,8 @@ namespace bathwright::matter {
 struct ConcentrationBasis {
   std::optional<units::GramsPerMole> molar_mass = {};             ///< of the substance
   std::optional<units::KilogramsPerLitre> solution_density = {};  ///< for % w/w and ppm w/w
-  std::optional<units::KilogramsPerLitre>
-      product_density;                        ///< of the liquid that is measured out, for mL/L, % v/v
+  std::optional<units::KilogramsPerLitre> product_density =
+      {};                                     ///< of the liquid measured out, for mL/L, % v/v
   std::optional<double> product_assay = {};   ///< kg of substance per kg of that liquid
   std::optional<double> water_kg_per_L = {};  ///< kg of water in a litre of solution, for mol/kg
 };
