@@ -1,0 +1,109 @@
+#include "charge_models.hpp"
+
+#include <algorithm>
+#include <bathwright/activity/debye_huckel_slope.hpp>
+#include <bathwright/data/tables.hpp>
+#include <cmath>
+#include <numeric>
+
+namespace bathwright::activity {
+namespace {
+
+std::vector<int> charges(std::span<const Solute> solutes) {
+  std::vector<int> z;
+  for (const Solute& solute : solutes) z.push_back(solute.charge);
+  return z;
+}
+
+/// f(I) of ln g = z^2 f, with its derivative and integral from 0 to I.
+struct DaviesTerm {
+  double value, slope, integral;
+};
+
+DaviesTerm davies(double slope_ln, double I) {
+  constexpr double linear = 0.3, held_above = 1.0;
+  const auto value = [](double i) { return std::sqrt(i) / (1 + std::sqrt(i)) - linear * i; };
+  const auto integral = [](double i) {
+    return i - 2 * std::sqrt(i) + 2 * std::log1p(std::sqrt(i)) - linear / 2 * i * i;
+  };
+  if (I > held_above) {
+    const double f = value(held_above);
+    return {-slope_ln * f, 0, -slope_ln * (integral(held_above) + f * (I - held_above))};
+  }
+  const double s = std::sqrt(std::max(I, 1e-30));
+  return {-slope_ln * value(I), -slope_ln * (1 / (2 * s * (1 + s) * (1 + s)) - linear),
+          -slope_ln * integral(I)};
+}
+
+/// (1 + x - 1/(1+x) - 2 ln(1+x)) 3/x^3, the osmotic counterpart of 1/(1+x); -> 1 for x -> 0.
+double sigma(double x) {
+  if (x < 0.02) return 1 - 1.5 * x + 1.8 * x * x;
+  return 3 / (x * x * x) * (1 + x - 1 / (1 + x) - 2 * std::log1p(x));
+}
+
+}  // namespace
+
+DaviesModel::DaviesModel(std::span<const Solute> solutes, units::Celsius t)
+    : charge_(charges(solutes)), slope_ln_(3 * osmotic_slope(t)) {}
+
+double DaviesModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma) const {
+  const double I = ionic_strength(molality, charge_);
+  const DaviesTerm f = davies(slope_ln_, I);
+  for (std::size_t i = 0; i < charge_.size(); ++i) ln_gamma[i] = charge_[i] * charge_[i] * f.value;
+  const double total = std::accumulate(molality.begin(), molality.end(), 0.0);
+  return -water_kg_per_mol * (total + 2 * I * f.value - 2 * f.integral);
+}
+
+double DaviesModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma,
+                             std::span<const std::uint32_t> columns, std::span<double> derivative) const {
+  const double slope = davies(slope_ln_, ionic_strength(molality, charge_)).slope;
+  for (std::size_t i = 0, at = 0; i < charge_.size(); ++i)
+    for (const std::uint32_t j : columns)
+      derivative[at++] = slope * charge_[i] * charge_[i] * charge_[j] * charge_[j] / 2;
+  return evaluate(molality, ln_gamma);
+}
+
+DebyeHueckelModel::DebyeHueckelModel(std::span<const Solute> solutes, units::Celsius t)
+    : charge_(charges(solutes)), slope_ln_(3 * osmotic_slope(t)) {
+  constexpr double default_size_pm = 400;  // near the mean of Kielland's table
+  const data::CsvTable table = data::built_in_table("activity/ion_size.csv", {"size_pm"});
+  const double b = size_slope_per_pm(t);
+  for (std::size_t i = 0; i < solutes.size(); ++i) {
+    double size = std::nan("");
+    for (std::size_t row = 0; row < table.size() && std::isnan(size); ++row)
+      if (table[row]["ion"] == solutes[i].name) size = table[row].number("size_pm");
+    if (std::isnan(size)) {
+      size = default_size_pm;
+      if (solutes[i].charge != 0)
+        notes_.push_back({InteractionNote::Kind::missing,
+                          {static_cast<std::uint32_t>(i)},
+                          0,
+                          solutes[i].name + ": no ion size published; 400 pm taken"});
+    }
+    ba_.push_back(b * size);
+  }
+}
+
+double DebyeHueckelModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma) const {
+  const double s = std::sqrt(ionic_strength(molality, charge_));
+  double osmotic = 0;
+  for (std::size_t i = 0; i < charge_.size(); ++i) {
+    const double z2 = charge_[i] * charge_[i];
+    ln_gamma[i] = -slope_ln_ * z2 * s / (1 + ba_[i] * s);
+    osmotic += molality[i] * (1 - slope_ln_ / 3 * z2 * s * sigma(ba_[i] * s));
+  }
+  return -water_kg_per_mol * osmotic;
+}
+
+double DebyeHueckelModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma,
+                                   std::span<const std::uint32_t> columns,
+                                   std::span<double> derivative) const {
+  const double s = std::sqrt(std::max(ionic_strength(molality, charge_), 1e-30));
+  for (std::size_t i = 0, at = 0; i < charge_.size(); ++i) {
+    const double slope = -slope_ln_ * charge_[i] * charge_[i] / (2 * s * (1 + ba_[i] * s) * (1 + ba_[i] * s));
+    for (const std::uint32_t j : columns) derivative[at++] = slope * charge_[j] * charge_[j] / 2;
+  }
+  return evaluate(molality, ln_gamma);
+}
+
+}  // namespace bathwright::activity

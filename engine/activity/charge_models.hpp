@@ -1,0 +1,48 @@
+// Davies and extended Debye-Hueckel: activity coefficients from charge, size and ionic strength alone.
+#pragma once
+
+#include <bathwright/activity/model.hpp>
+#include <bathwright/units/quantity.hpp>
+
+namespace bathwright::activity {
+
+/// log10 g = -A z^2 (sqrt(I)/(1+sqrt(I)) - 0.3 I); a neutral solute gives exactly 0. The bracket is held at
+/// its value at I = 1 mol/kg above that (the quadratic would run away). Trusted to 0.5 mol/kg. Water activity
+/// by Gibbs-Duhem. Source: Davies, C. W., Ion Association, Butterworths, London, 1962.
+class DaviesModel final : public ActivityModel {
+ public:
+  DaviesModel(std::span<const Solute> solutes, units::Celsius t);
+  double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const override;
+  double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
+                  std::span<const std::uint32_t> columns, std::span<double> derivative) const override;
+  ModelKind kind() const override { return ModelKind::davies; }
+  std::span<const InteractionNote> notes() const override { return {}; }
+  double trusted_ionic_strength() const override { return 0.5; }
+
+ private:
+  std::vector<int> charge_;
+  double slope_ln_;
+};
+
+/// log10 g = -A z^2 sqrt(I) / (1 + B a sqrt(I)) with the ion sizes of Kielland 1937 (J. Am. Chem. Soc.
+/// 59:1675); an ion without a size gets 400 pm (a note says so); neutral: exactly 0. Trusted to 0.1 mol/kg.
+/// With individual sizes this is not the gradient of a Gibbs energy; water's activity sums each ion's own
+/// osmotic term.
+class DebyeHueckelModel final : public ActivityModel {
+ public:
+  DebyeHueckelModel(std::span<const Solute> solutes, units::Celsius t);
+  double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const override;
+  double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
+                  std::span<const std::uint32_t> columns, std::span<double> derivative) const override;
+  ModelKind kind() const override { return ModelKind::debye_huckel; }
+  std::span<const InteractionNote> notes() const override { return notes_; }
+  double trusted_ionic_strength() const override { return 0.1; }
+
+ private:
+  std::vector<int> charge_;
+  std::vector<double> ba_;  ///< B times the size, kg^0.5 mol^-0.5
+  double slope_ln_;
+  std::vector<InteractionNote> notes_;
+};
+
+}  // namespace bathwright::activity

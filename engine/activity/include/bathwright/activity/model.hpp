@@ -1,0 +1,73 @@
+// What every activity model offers the solver: ln gamma and ln a(water) from molalities at one temperature.
+// Molality scale, infinite-dilution reference; single-ion values follow each model's own convention (Pitzer:
+// unscaled). Not for: deciding which model to use (make_model.hpp).
+#pragma once
+
+#include <cstdint>
+#include <span>
+#include <string>
+#include <string_view>
+#include <vector>
+
+namespace bathwright::activity {
+
+enum class ModelKind { davies, debye_huckel, pitzer };
+
+[[nodiscard]] std::string_view name(ModelKind kind);
+
+/// Whether weak ion pairs are part of the activity coefficients (interaction) or explicit species
+/// (association). A set of equilibria made for one must not be used with the other: the same attraction
+/// would be counted twice.
+enum class Convention { interaction, association };
+
+[[nodiscard]] Convention convention(ModelKind kind);
+
+struct Solute {
+  std::string name;  ///< "Ni^2+", "H3BO3"
+  int charge = 0;
+};
+
+/// The charge written in a species name: 2 for "Ni^2+", -1 for "OH^-", 0 for a neutral one.
+[[nodiscard]] int charge_in_name(std::string_view name);
+
+/// kg of water per mol; the molar mass the published parameters were fitted with.
+inline constexpr double water_kg_per_mol = 0.0180153;
+
+/// Something about an interaction that a user must be able to see: it was missing, guessed, out of its range.
+struct InteractionNote {
+  enum class Kind : std::uint8_t { missing, estimated, no_temperature_data, above_range, outside_model };
+  Kind kind = Kind::missing;
+  std::vector<std::uint32_t>
+      solutes;             ///< whose molalities decide whether it matters: positions in the solute list
+  double limit_molal = 0;  ///< above_range: the ionic strength up to which the parameters were fitted
+  std::string text;        ///< "Ni^2+ - HSO4^-: estimated (...)"
+};
+
+/// One model, prepared for a fixed list of solutes at one temperature. Immutable: any number of threads may
+/// use it at once. No call allocates.
+class ActivityModel {
+ public:
+  virtual ~ActivityModel() = default;
+
+  /// molality (n), mol/kg, >= 0 -> ln_gamma (n). Returns ln of the activity of water.
+  virtual double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const = 0;
+
+  /// Also the derivatives d ln gamma_i / d m_j for every solute i and the solutes j listed in `columns`,
+  /// row by row: derivative[i * columns.size() + c].
+  virtual double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
+                          std::span<const std::uint32_t> columns, std::span<double> derivative) const = 0;
+
+  [[nodiscard]] virtual ModelKind kind() const = 0;
+  [[nodiscard]] virtual std::span<const InteractionNote> notes() const = 0;
+  /// The ionic strength above which the model as such is not to be trusted, mol/kg (infinite: decided by
+  /// notes).
+  [[nodiscard]] virtual double trusted_ionic_strength() const = 0;
+};
+
+/// The most solutes a model takes; a bath type may list at most this many species.
+inline constexpr std::size_t max_solutes = 256;
+
+/// I = 1/2 sum m z^2, mol/kg.
+[[nodiscard]] double ionic_strength(std::span<const double> molality, std::span<const int> charge);
+
+}  // namespace bathwright::activity

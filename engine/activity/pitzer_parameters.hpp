@@ -1,0 +1,47 @@
+// Looks up the ion-interaction parameters for a list of solutes at a temperature: which published or
+// regressed set serves a pair, interpolation in temperature, and the named rules for what is missing.
+#pragma once
+
+#include <bathwright/activity/make_model.hpp>
+#include <bathwright/activity/model.hpp>
+
+namespace bathwright::activity {
+
+struct BinaryTerm {
+  std::uint32_t cation, anion;
+  double beta0, beta1, beta2, c;  ///< c = C_phi / (2 sqrt|z+ z-|)
+  double alpha1, alpha2;
+};
+struct LikePair {  ///< two cations or two anions, i < j in the solute list
+  std::uint32_t i, j;
+  double theta;
+};
+struct NeutralPair {
+  std::uint32_t neutral, other;
+  double lambda;
+};
+struct Triplet {  ///< psi (two like ions and one of opposite sign) or zeta (neutral, cation, anion)
+  std::uint32_t i, j, k;
+  double value;
+};
+
+/// Everything the model needs, in solute order, and what a user must be told about it.
+struct PitzerParameters {
+  std::vector<BinaryTerm> binary;
+  std::vector<LikePair> like_pairs;  ///< only pairs with a theta or of unequal charge
+  std::vector<NeutralPair> neutral_pairs;
+  std::vector<Triplet> triplets;
+  /// Ions the set says nothing about and whose charge type is too rare for an estimate: Davies' coefficient,
+  /// with the ionic strength held at 1 mol/kg, stands in for them.
+  std::vector<std::uint32_t> outside;
+  std::vector<InteractionNote> notes;
+};
+
+/// Rules for what is not published, each listed in the notes:
+///   cation - anion   median beta0, beta1, beta2 of the published pairs of the same charge type, C_phi = 0
+///   ion of a charge type with fewer than three published pairs, against every counter-ion: outside the model
+///   like - like      theta = 0 (the electrostatic E-theta stays)
+///   triplets, neutral - anything    0
+PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, AcidSet acid_set);
+
+}  // namespace bathwright::activity

@@ -1,0 +1,12 @@
+#include <algorithm>
+#include <bathwright/bath/bath_type.hpp>
+
+namespace bathwright::bath {
+
+const Quantity* BathType::quantity(std::string_view wanted) const {
+  const auto found =
+      std::find_if(quantities.begin(), quantities.end(), [&](const Quantity& q) { return q.id == wanted; });
+  return found == quantities.end() ? nullptr : &*found;
+}
+
+}  // namespace bathwright::bath

@@ -1,0 +1,117 @@
+// What a bath type says about its chemistry and its trade: a plain value, filled by whoever provides it (a
+// plugin through plugin_host). Not for: a particular vat (tank.hpp) or numbers at a temperature
+// (chemistry.hpp).
+#pragma once
+
+#include <bathwright/activity/model.hpp>
+#include <bathwright/matter/formula.hpp>
+#include <bathwright/speciation/equilibria.hpp>
+#include <cstdint>
+#include <functional>
+#include <limits>
+#include <span>
+#include <string>
+#include <vector>
+
+namespace bathwright::bath {
+
+inline constexpr double not_given = std::numeric_limits<double>::quiet_NaN();
+
+struct Source {
+  std::string key, citation, terms;
+};
+
+/// How the total of a component is known when a tank is analysed.
+enum class FoundBy : std::uint8_t {
+  analysis,  ///< titrated, or reported by a laboratory
+  pH,        ///< H^+
+  charge,    ///< from electroneutrality: the counter-ion nobody titrates (one per bath type)
+  book       ///< carried from the last state
+};
+
+/// A component of the solution chemistry: a basis species and where its total comes from.
+struct Component {
+  std::string species;  ///< "Ni^2+"
+  FoundBy found_by = FoundBy::analysis;
+};
+
+/// A quantity the lab and the tank file speak of, in g/L of `formula`: total nickel, or nickel sulfate
+/// hexahydrate.
+struct Quantity {
+  std::string id;     ///< "Ni^2+", "NiSO4.6H2O"
+  std::string label;  ///< "nickel"
+  matter::Formula formula;
+  /// mol of this quantity = sum of coefficient * total mol of the component. A salt is what the components
+  /// make up: NiCl2.6H2O = 1/2 Cl^-;  NiSO4.6H2O = Ni^2+ - 1/2 Cl^-.
+  speciation::Composition counts;
+  bool salt_view = false;  ///< another way to state components that are quantities of their own
+};
+
+/// Limits in g/L (or pH units, degC). NaN: open.
+struct Window {
+  std::string subject;  ///< a quantity's id, an indicator's id, "pH" or "temperature"
+  double low = not_given, aim = not_given, high = not_given;
+  double stop_low = not_given, stop_high = not_given;
+  std::string source;
+};
+
+/// A solid to watch, by its name in the tables of equilibria, and what an operator would see.
+struct WatchedSolid {
+  std::string name;
+  std::string sign_in_tank;
+};
+
+/// How one stock chemical goes into the bath.
+struct AdditionRule {
+  std::string supply;                       ///< stock chemical id
+  std::uint32_t order = 0;                  ///< smaller goes in earlier
+  double largest_rise_g_per_L = not_given;  ///< in one addition, of the substance as on the label
+  double largest_pH_step = not_given;       ///< in one addition
+  double wait_h = 0;                        ///< before the next addition
+  std::string how;                          ///< "dissolve hot in a side tank"
+  std::string source;
+};
+
+enum class Level : std::uint8_t { notice = 1, warn, stop };
+
+struct Caution {
+  std::string subject;  ///< a quantity or supply, empty for the whole bath
+  std::string text;
+  Level level = Level::notice;
+  std::string source;
+};
+
+/// What an indicator may look at: the solved bath. Spans are in the order of BathType's lists and of the
+/// solved species.
+struct IndicatorView {
+  double temperature_C, volume_L, pH, ionic_strength;
+  std::span<const double> quantity_g_per_L;
+  std::span<const double> species_molality, species_activity;  ///< in the order of `species_names`
+  std::span<const std::string> species_names;
+};
+
+struct Indicator {
+  std::string id, label, meaning, unit;
+  std::function<Result<double>(const IndicatorView&)> evaluate;  ///< any thread
+};
+
+struct BathType {
+  std::string id, name, version, author, licence;
+  std::string summary, validity;
+  double min_C = 0, max_C = 100, max_ionic_strength = not_given;
+  activity::Convention convention = activity::Convention::interaction;
+  std::vector<Source> sources;
+  std::vector<Component> components;
+  std::vector<Quantity> quantities;
+  std::vector<speciation::StatedSpecies> own_species;  ///< beside the shared tables
+  std::vector<speciation::StatedSolid> own_solids;
+  std::vector<WatchedSolid> solids;
+  std::vector<Window> windows;
+  std::vector<AdditionRule> additions;
+  std::vector<Indicator> indicators;
+  std::vector<Caution> cautions;
+
+  [[nodiscard]] const Quantity* quantity(std::string_view id) const;  ///< nullptr if there is none
+};
+
+}  // namespace bathwright::bath

@@ -1,0 +1,106 @@
+// A bath type made ready to compute for one tank: amounts in, concentrations, pH, free ions, headroom and
+// volume out. Read next: bath_type.hpp for the words, speciation/solver.hpp for what stands behind.
+#pragma once
+
+#include <bathwright/bath/tank.hpp>
+#include <bathwright/matter/density.hpp>
+#include <bathwright/speciation/components.hpp>
+#include <bathwright/speciation/solver.hpp>
+#include <map>
+
+namespace bathwright::bath {
+
+/// A solid's distance from forming, at the tank's working and idle temperature.
+struct Headroom {
+  std::string solid, formula, sign_in_tank;
+  bool slow = false;
+  double working_log10 = 0, idle_log10 = 0;  ///< -log10(ion product / K): positive below saturation
+  /// kg of the solid that would still dissolve in the tank (positive), or would crystallise from it
+  /// (negative). NaN for a solid whose constant does not cover the temperature, or that only a change of pH
+  /// can form (hydroxides).
+  double working_kg = not_given, idle_kg = not_given;
+  /// pH above which a hydroxide would form at the working temperature; NaN for other solids.
+  double forms_above_pH = not_given;
+  /// Whether the idle form differs (NiSO4 hexahydrate hot, heptahydrate cold): only the covered temperature
+  /// counts.
+  bool covers_working = true, covers_idle = true;
+};
+
+struct SpeciesView {
+  std::string name;
+  double molality, gamma, log10_activity;
+};
+
+struct IndicatorValue {
+  std::string id, label, meaning, unit;
+  std::optional<double> value;  ///< nothing: not available, `note` says why
+  std::string note;
+};
+
+/// Everything that can be said of a tank's state.
+struct TankView {
+  double volume_L = 0, density_kg_per_L = 0, pH = 0, ionic_strength = 0, water_activity = 0;
+  std::vector<double> quantity_g_per_L;  ///< in the order of BathType::quantities
+  std::vector<SpeciesView> species;      ///< by falling molality
+  std::vector<Headroom> headroom;
+  std::vector<IndicatorValue> indicators;
+  std::vector<std::string> warnings;  ///< out of range, estimated or missing interactions that matter here
+};
+
+/// What one kg of a stock chemical brings into the solution.
+struct Brings {
+  std::vector<double> component_mol;  ///< per kg of product
+  double water_kg = 0;                ///< per kg of product, crystal water included
+};
+
+class Chemistry {
+ public:
+  /// Fails on a component or solid the tables do not know, a temperature outside the bath type's range.
+  static Result<Chemistry> prepare(const BathType& type, units::Celsius working, units::Celsius idle);
+
+  [[nodiscard]] const BathType& type() const;
+  /// Basis species the totals are counted in; H^+ first.
+  [[nodiscard]] const std::vector<std::string>& components() const;
+  [[nodiscard]] const speciation::Solver& working() const;
+  [[nodiscard]] const speciation::Solver& idle() const;
+  [[nodiscard]] units::Celsius working_temperature() const;
+  [[nodiscard]] units::Celsius idle_temperature() const;
+
+  /// Volume of the solution at its temperature, L. Smooth; allocates nothing.
+  [[nodiscard]] double volume_L(const TankState& state) const;
+  [[nodiscard]] units::KilogramsPerLitre density(const TankState& state) const;
+
+  /// Total amount of a quantity in the tank, mol; in g/L divide by volume and multiply by the formula's molar
+  /// mass.
+  [[nodiscard]] double quantity_mol(const Quantity& quantity, std::span<const double> component_mol) const;
+  [[nodiscard]] double quantity_g_per_L(const Quantity& quantity, const TankState& state) const;
+
+  /// The equilibrium at the working temperature, nothing precipitating (what supersaturates is reported).
+  [[nodiscard]] Result<speciation::Equilibrium> speciate(const TankState& state) const;
+
+  /// The full view: levels, pH, species, headroom at both temperatures, indicators, warnings.
+  [[nodiscard]] Result<TankView> view(const TankState& state) const;
+  /// Only the headroom in log10 units and pH: what a step check and a path need; much cheaper than view().
+  [[nodiscard]] Result<TankView> quick_view(const TankState& state) const;
+
+  /// The state of a tank from its levels: g/L per quantity id (those of components found by analysis, or
+  /// their salt views), pH, volume. The counter-ion follows from electroneutrality at that pH, the water from
+  /// the density model, so that volume_L gives the volume back. Fails on a component nobody gave, levels that
+  /// leave no room for the counter-ion (names them), a pH that cannot be reached.
+  [[nodiscard]] Result<TankState> state_from(const std::map<std::string, double>& g_per_L, double pH,
+                                             units::Litres volume, units::Celsius temperature) const;
+
+  /// What a kg of a product brings. Fails when its substance needs a component the bath type does not have.
+  [[nodiscard]] Result<Brings> brings(const matter::StockChemical& stock) const;
+
+  /// The state after `kg` of something is stirred in.
+  [[nodiscard]] static TankState after(TankState state, const Brings& brings, double kg);
+  /// The state after litres of pure water are added.
+  [[nodiscard]] TankState after_water(TankState state, units::Litres water) const;
+
+ private:
+  struct Prepared;
+  std::shared_ptr<const Prepared> prepared_;
+};
+
+}  // namespace bathwright::bath

@@ -1,0 +1,18 @@
+#include <algorithm>
+#include <bathwright/bath/tank.hpp>
+
+namespace bathwright::bath {
+
+const Aim* Tank::aim(std::string_view quantity) const {
+  const auto found =
+      std::find_if(aims.begin(), aims.end(), [&](const Aim& a) { return a.quantity == quantity; });
+  return found == aims.end() ? nullptr : &*found;
+}
+
+const ShelfItem* Tank::on_shelf(std::string_view stock_id) const {
+  const auto found =
+      std::find_if(shelf.begin(), shelf.end(), [&](const ShelfItem& s) { return s.stock.id == stock_id; });
+  return found == shelf.end() ? nullptr : &*found;
+}
+
+}  // namespace bathwright::bath

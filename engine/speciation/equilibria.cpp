@@ -1,0 +1,283 @@
+#include <algorithm>
+#include <bathwright/activity/debye_huckel_slope.hpp>
+#include <bathwright/data/tables.hpp>
+#include <bathwright/speciation/equilibria.hpp>
+#include <bathwright/speciation/reaction.hpp>
+#include <cassert>
+#include <cmath>
+#include <numbers>
+#include <optional>
+#include <set>
+
+namespace bathwright::speciation {
+namespace {
+
+constexpr double gas_constant_kJ = 8.314462618e-3;  // kJ/(mol K), CODATA 2018
+constexpr double reference_K = 298.15;
+
+std::string without_phase(std::string name) {
+  for (const char* phase : {"(s)", "(g)"})
+    if (name.ends_with(phase)) name.resize(name.size() - 3);
+  return name;
+}
+
+/// Carries a constant measured at an ionic strength to zero: log K(0) = log K(I) + sum nu log gamma(I), with
+/// Davies' log gamma, which depends on z^2 alone. Sound to about 0.5 mol/kg; the rest is in the uncertainty.
+void carry_to_zero(Constant& constant, const Reaction& reaction, double I) {
+  double z2 = 0;
+  for (const Term& term : reaction.right)
+    z2 += term.coefficient * std::pow(activity::charge_in_name(term.name), 2);
+  for (const Term& term : reaction.left)
+    z2 -= term.coefficient * std::pow(activity::charge_in_name(term.name), 2);
+  const double i = std::min(I, 1.0), s = std::sqrt(i);
+  const double slope_log10 = 3 * activity::osmotic_slope({25}) / std::numbers::ln10;
+  constant.log10_K += -slope_log10 * (s / (1 + s) - 0.3 * i) * z2;
+  constant.uncertainty = std::hypot(constant.uncertainty, I <= 0.5 ? 0.1 : I <= 1 ? 0.3 : 0.6);
+}
+
+Constant constant_in(const data::CsvRow& row) {
+  const double dH = row.number("dH_kJ_mol"), dCp = row.number("dCp_J_molK");
+  return {row.number("log10_K"), std::isnan(dH) ? 0 : dH, std::isnan(dCp) ? 0 : dCp,
+          row.number("uncertainty"), !std::isnan(dH)};
+}
+
+struct Builder {
+  std::vector<std::string> ions;
+  std::vector<StatedSpecies> species;
+  std::vector<StatedSolid> solids, gases;
+};
+
+Builder read_tables(activity::Convention convention) {
+  // With interaction parameters the hydrated sulfates take the constants that were derived with them.
+  const bool interaction = convention == activity::Convention::interaction;
+  Builder found;
+  const data::CsvTable species = data::built_in_table(
+      "equilibria/species.csv", {"log10_K", "ionic_strength", "dH_kJ_mol", "dCp_J_molK", "uncertainty"});
+  for (std::size_t i = 0; i < species.size(); ++i) {
+    const data::CsvRow row = species[i];
+    if (row["set"] != "main") continue;
+    if (row["convention"] != "both" && (row["convention"] == "interaction") != interaction) continue;
+    found.species.push_back({std::string(row["species"]), std::string(row["reaction"]),
+                             std::string(row["source"]), row.where(), constant_in(row),
+                             row.number("ionic_strength")});
+  }
+  const data::CsvTable pairs = data::built_in_table("activity/pitzer_binary.csv", {});
+  for (std::size_t i = 0; i < pairs.size(); ++i)
+    if (pairs[i]["set"] == "main")
+      for (const char* side : {"cation", "anion"}) found.ions.emplace_back(pairs[i][side]);
+  const auto read_phases = [](const char* path, const char* name_column, std::vector<StatedSolid>& into,
+                              const auto& wanted, std::initializer_list<std::string_view> numeric) {
+    const data::CsvTable table = data::built_in_table(path, numeric);
+    for (std::size_t i = 0; i < table.size(); ++i) {
+      const data::CsvRow row = table[i];
+      if (!wanted(row)) continue;
+      const double low = row.number("min_C"), high = row.number("max_C");
+      StatedSolid phase{std::string(row[name_column]),
+                        std::string(row["formula"]),
+                        std::string(row["reaction"]),
+                        std::string(row["source"]),
+                        std::string(row["note"]),
+                        row.where(),
+                        constant_in(row),
+                        std::isnan(low) ? 0 : low,
+                        std::isnan(high) ? 100 : high,
+                        row["kinetics"] == "slow"};
+      const auto same =
+          std::find_if(into.begin(), into.end(), [&](const StatedSolid& s) { return s.name == phase.name; });
+      if (same == into.end())
+        into.push_back(std::move(phase));
+      else
+        *same = std::move(phase);  // a later set supersedes the row of the same solid
+    }
+  };
+  read_phases("equilibria/solids.csv", "solid", found.solids,
+              [&](const data::CsvRow& row) {
+                return row["set"] == "main" || (interaction && row["set"] == "sulfate T");
+              },
+              {"log10_K", "dH_kJ_mol", "dCp_J_molK", "uncertainty", "min_C", "max_C"});
+  read_phases("equilibria/gases.csv", "gas", found.gases, [](const data::CsvRow&) { return true; },
+              {"log10_K", "dH_kJ_mol", "uncertainty"});
+  return found;
+}
+
+}  // namespace
+
+double Constant::log10_at(units::Celsius t) const {
+  const double T = units::kelvin(t), dCp_kJ = dCp_J_per_molK / 1000;
+  const double ln_shift =
+      -(dH_kJ_per_mol - reference_K * dCp_kJ) / gas_constant_kJ * (1 / T - 1 / reference_K) +
+      dCp_kJ / gas_constant_kJ * std::log(T / reference_K);
+  return log10_K + ln_shift / std::numbers::ln10;
+}
+
+void Constant::add(const Constant& other, double times) {
+  log10_K += times * other.log10_K;
+  dH_kJ_per_mol += times * other.dH_kJ_per_mol;
+  dCp_J_per_molK += times * other.dCp_J_per_molK;
+  uncertainty = std::hypot(uncertainty, times * other.uncertainty);
+  has_dH = has_dH && other.has_dH;
+}
+
+const Equilibria& Equilibria::built_in(activity::Convention convention) {
+  const auto build = [](activity::Convention c) {
+    Builder tables = read_tables(c);
+    Equilibria all;
+    all.free_ions_ = std::move(tables.ions);
+    all.stated_species_ = std::move(tables.species);
+    all.stated_solids_ = std::move(tables.solids);
+    all.stated_gases_ = std::move(tables.gases);
+    [[maybe_unused]] const Outcome resolved = all.resolve();  // a test reads every row
+    assert(resolved);
+    return all;
+  };
+  static const Equilibria interaction = build(activity::Convention::interaction);
+  static const Equilibria association = build(activity::Convention::association);
+  return convention == activity::Convention::interaction ? interaction : association;
+}
+
+Result<Equilibria> Equilibria::with(const std::vector<StatedSpecies>& species,
+                                    const std::vector<StatedSolid>& solids) const {
+  Equilibria all = *this;
+  const auto merge = [](auto& into, const auto& added) {
+    for (const auto& one : added) {
+      const auto same =
+          std::find_if(into.begin(), into.end(), [&](const auto& s) { return s.name == one.name; });
+      if (same == into.end())
+        into.push_back(one);
+      else
+        *same = one;
+    }
+  };
+  merge(all.stated_species_, species);
+  merge(all.stated_solids_, solids);
+  if (Outcome resolved = all.resolve(); !resolved) return resolved.problems();
+  return all;
+}
+
+Outcome Equilibria::resolve() {
+  Problems problems;
+  std::map<std::string, std::pair<const StatedSpecies*, Reaction>> formed_by;
+  for (const StatedSpecies& stated : stated_species_) {
+    auto reaction = parse_reaction(stated.reaction, stated.where);
+    if (!reaction)
+      problems.insert(problems.end(), reaction.problems().begin(), reaction.problems().end());
+    else
+      formed_by.insert_or_assign(stated.name, std::pair{&stated, *std::move(reaction)});
+  }
+
+  species_.clear();
+  std::set<std::string> under_way;
+  // Adds `times` of a named species, written over the basis, to a composition.
+  struct Total {
+    Composition made_of;
+    double water = 0;
+    Constant constant;
+    std::vector<std::string> sources;
+  };
+  auto resolve_species = [&](auto&& self, const std::string& name,
+                             const std::string& where) -> const SpeciesData* {
+    if (const auto known = species_.find(name); known != species_.end()) return &known->second;
+    const auto row = formed_by.find(name);
+    if (row == formed_by.end()) return &species_.insert({name, {name, {{name, 1}}, 0, {}, {}}}).first->second;
+    if (!under_way.insert(name).second) {
+      problems.push_back({Fault::inconsistent_data, where,
+                          "the reaction that forms " + name + " leads back to itself", "",
+                          "Write it over species that are not formed from it."});
+      return nullptr;
+    }
+    const auto& [stated, reaction] = row->second;
+    SpeciesData data{name, {}, 0, stated->constant, {stated->source}};
+    if (stated->measured_at_ionic_strength > 0)
+      carry_to_zero(data.formation, reaction, stated->measured_at_ionic_strength);
+    bool formed = false, complete = true;
+    const auto take = [&](const Term& term, double sign) {
+      if (term.name == name && sign < 0 && term.coefficient == 1 && !formed) {
+        formed = true;
+        return;
+      }
+      if (term.name == "H2O") {
+        data.water += sign * term.coefficient;
+        return;
+      }
+      const SpeciesData* part = self(self, term.name, stated->where);
+      if (!part) {
+        complete = false;
+        return;
+      }
+      for (const auto& [basis, count] : part->made_of) data.made_of[basis] += sign * term.coefficient * count;
+      data.water += sign * term.coefficient * part->water;
+      if (part->made_of.size() > 1 || !part->made_of.contains(term.name)) {
+        data.formation.add(part->formation, sign * term.coefficient);
+        data.sources.insert(data.sources.end(), part->sources.begin(), part->sources.end());
+      }
+    };
+    for (const Term& term : reaction.left) take(term, 1);
+    for (const Term& term : reaction.right) take(term, -1);
+    std::erase_if(data.made_of, [](const auto& entry) { return entry.second == 0; });
+    under_way.erase(name);
+    if (!formed)
+      problems.push_back(
+          {Fault::inconsistent_data, stated->where, "the reaction does not form one " + name, "", ""});
+    if (!formed || !complete) return nullptr;
+    return &species_.insert({name, std::move(data)}).first->second;
+  };
+
+  for (const StatedSpecies& stated : stated_species_) {
+    const auto row = formed_by.find(stated.name);
+    if (row == formed_by.end()) continue;
+    for (const auto* side : {&row->second.second.left, &row->second.second.right})
+      for (const Term& term : *side)
+        if (term.name != "H2O") resolve_species(resolve_species, term.name, stated.where);
+  }
+
+  for (const std::string& ion : free_ions_) resolve_species(resolve_species, ion, ion);
+
+  const auto dissolve = [&](const StatedSolid& stated) -> std::optional<Total> {
+    auto reaction = parse_reaction(stated.reaction, stated.where);
+    if (!reaction) {
+      problems.insert(problems.end(), reaction.problems().begin(), reaction.problems().end());
+      return std::nullopt;
+    }
+    Total total{{}, 0, stated.constant, {stated.source}};
+    const auto take = [&](const Term& term, double sign) {
+      if (term.name == "H2O") {
+        total.water += sign * term.coefficient;
+        return;
+      }
+      const SpeciesData* part = resolve_species(resolve_species, term.name, stated.where);
+      if (!part) return;
+      for (const auto& [basis, count] : part->made_of)
+        total.made_of[basis] += sign * term.coefficient * count;
+      total.water += sign * term.coefficient * part->water;
+      if (part->made_of.size() > 1 || !part->made_of.contains(term.name)) {
+        // K of the phase over the basis: dissolve, then take the dissolved species apart.
+        total.constant.add(part->formation, -sign * term.coefficient);
+        total.sources.insert(total.sources.end(), part->sources.begin(), part->sources.end());
+      }
+    };
+    for (const Term& term : reaction->left)
+      if (!term.name.ends_with("(s)") && !term.name.ends_with("(g)")) take(term, -1);
+    for (const Term& term : reaction->right) take(term, 1);
+    std::erase_if(total.made_of, [](const auto& entry) { return entry.second == 0; });
+    return total;
+  };
+  solids_.clear();
+  for (const StatedSolid& stated : stated_solids_)
+    if (auto total = dissolve(stated))
+      solids_.push_back({stated.name, stated.formula.empty() ? without_phase(stated.name) : stated.formula,
+                         std::move(total->made_of), total->water, total->constant, stated.min_C, stated.max_C,
+                         stated.slow, std::move(total->sources), stated.note});
+  gases_.clear();
+  for (const StatedSolid& stated : stated_gases_)
+    if (auto total = dissolve(stated))
+      gases_.push_back(
+          {stated.name, std::move(total->made_of), total->water, total->constant, std::move(total->sources)});
+
+  basis_.clear();
+  for (const auto& [name, data] : species_)
+    if (data.made_of.size() == 1 && data.made_of.begin()->first == name) basis_.push_back(name);
+  if (!problems.empty()) return problems;
+  return Done{};
+}
+
+}  // namespace bathwright::speciation

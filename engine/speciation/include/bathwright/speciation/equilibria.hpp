@@ -1,0 +1,106 @@
+// The equilibria the engine knows: dissolved species, solids and gases, each written over basis species, H^+
+// and H2O, with a constant that carries its uncertainty and source. Built in from engine/data/equilibria; a
+// bath type may add its own. Not for: numbers at one temperature (system.hpp).
+#pragma once
+
+#include <bathwright/activity/model.hpp>
+#include <bathwright/base/result.hpp>
+#include <bathwright/units/quantity.hpp>
+#include <map>
+#include <string>
+#include <vector>
+
+namespace bathwright::speciation {
+
+/// An equilibrium constant and how it moves with temperature.
+///   log10 K(T) = log10 K(25 degC) + [-(dH - T0 dCp)(1/T - 1/T0)/R + (dCp/R) ln(T/T0)] / ln 10,  dCp constant
+/// The form is linear in the three numbers, so constants of added reactions add.
+struct Constant {
+  double log10_K = 0;        ///< 25 degC, molal, zero ionic strength
+  double dH_kJ_per_mol = 0;  ///< 0 and has_dH = false: unknown, no temperature correction
+  double dCp_J_per_molK = 0;
+  double uncertainty = 0;  ///< one standard uncertainty of log10 K
+  bool has_dH = true;
+
+  [[nodiscard]] double log10_at(units::Celsius t) const;
+  /// The constant of `times` times the reaction added to this one.
+  void add(const Constant& other, double times);
+};
+
+/// Coefficients over basis species: what one unit is made of.
+using Composition = std::map<std::string, double>;
+
+struct SpeciesData {
+  std::string name;     ///< "NiOH^+"
+  Composition made_of;  ///< basis species (H^+ included), water apart; { name: 1 } for a basis species
+  double water = 0;     ///< H2O taken up in forming it (negative: given off)
+  Constant formation;   ///< of  sum made_of + water H2O = species
+  std::vector<std::string> sources;
+};
+
+struct SolidData {
+  std::string name;      ///< unique phase name, "NiSO4.6H2O (alpha)"
+  std::string formula;   ///< "NiSO4.6H2O"
+  Composition gives;     ///< basis species from one unit
+  double water = 0;      ///< H2O from one unit
+  Constant dissolution;  ///< of  solid = sum gives + water H2O
+  double min_C = 0, max_C = 100;
+  bool slow = false;  ///< known to form too slowly to count on: shown as supersaturated, not precipitated
+  std::vector<std::string> sources;
+  std::string note;
+};
+
+struct GasData {
+  std::string name;  ///< "CO2"
+  Composition gives;
+  double water = 0;
+  Constant dissolution;  ///< of  gas (1 bar) = sum gives + water H2O
+  std::vector<std::string> sources;
+};
+
+/// A reaction as a table or a bath type states it, before it is written over the basis.
+struct StatedSpecies {
+  std::string name, reaction, source, where;
+  Constant constant;
+  double measured_at_ionic_strength = 0;  ///< mol/kg; 0: already at zero ionic strength
+};
+struct StatedSolid {
+  std::string name, formula, reaction, source, note, where;
+  Constant constant;
+  double min_C = 0, max_C = 100;
+  bool slow = false;
+};
+
+class Equilibria {
+ public:
+  /// The built-in tables, for one data convention. Constants measured at an ionic strength are carried to
+  /// zero with the Davies equation (held at 1 mol/kg), and their uncertainty is widened: 0.1 up to 0.5
+  /// mol/kg, 0.3 up to 1, 0.6 above.
+  static const Equilibria& built_in(activity::Convention convention);
+
+  /// These equilibria with a bath type's own added; one that restates a known species or solid replaces it.
+  /// Fails where a reaction does not read, does not form its species, or leads back to itself.
+  [[nodiscard]] Result<Equilibria> with(const std::vector<StatedSpecies>& species,
+                                        const std::vector<StatedSolid>& solids) const;
+
+  [[nodiscard]] const std::map<std::string, SpeciesData>& species() const { return species_; }
+  [[nodiscard]] const std::vector<SolidData>& solids() const { return solids_; }
+  [[nodiscard]] const std::vector<GasData>& gases() const { return gases_; }
+  /// Names that no reaction forms: what totals are counted in. H^+ is one of them, H2O is not listed.
+  [[nodiscard]] const std::vector<std::string>& basis() const { return basis_; }
+
+ private:
+  Outcome resolve();
+
+  std::vector<std::string>
+      free_ions_;  ///< known to the activity models, formed from nothing: NO3^-, Li^+, ClO4^-
+  std::vector<StatedSpecies> stated_species_;
+  std::vector<StatedSolid> stated_solids_;
+  std::vector<StatedSolid> stated_gases_;
+  std::map<std::string, SpeciesData> species_;
+  std::vector<SolidData> solids_;
+  std::vector<GasData> gases_;
+  std::vector<std::string> basis_;
+};
+
+}  // namespace bathwright::speciation

@@ -1,0 +1,70 @@
+#include "verify.hpp"
+
+#include <algorithm>
+#include <cmath>
+
+namespace bathwright::speciation {
+
+Residuals verify(const Solver& solver, const Task& task, const Equilibrium& answer) {
+  const ChemicalSystem& system = solver.system();
+  const std::size_t components = system.components().size();
+  Residuals worst;
+  const auto raise = [](double& to, double value) {
+    to = std::max(to, std::isnan(value) ? HUGE_VAL : std::abs(value));
+  };
+
+  // Activity coefficients once more from the molalities.
+  std::vector<double> ln_gamma(answer.molality.size());
+  const double ln_water = solver.model().evaluate(answer.molality, ln_gamma);
+  std::vector<double> ln_a(answer.molality.size());
+  for (std::size_t j = 0; j < ln_a.size(); ++j) ln_a[j] = std::log(answer.molality[j]) + ln_gamma[j];
+  for (std::size_t j = 0; j < ln_a.size(); ++j) {
+    const SystemSpecies& species = system.species()[j];
+    if (answer.molality[j] <= 0) continue;  // a component that is absent, and all that needs it
+    double expected = solver.ln_K_species()[j] + species.water * ln_water;
+    for (std::size_t i = 0; i < components; ++i)
+      if (species.made_of[i] != 0) expected += species.made_of[i] * ln_a[i];
+    raise(worst.mass_action, ln_a[j] - expected);
+  }
+
+  double charge = 0;
+  for (std::size_t j = 0; j < ln_a.size(); ++j) charge += system.species()[j].charge * answer.molality[j];
+  double given_charge = 0;  // of the totals: zero when they were neutral compounds
+  for (std::size_t i = 0; i < components; ++i)
+    given_charge += system.species()[i].charge * task.component_mol[i];
+  raise(worst.charge_mol_per_kg, charge - given_charge / answer.water_kg);
+
+  for (std::size_t i = 0; i < components; ++i) {
+    double found = 0, throughput = 0;
+    const auto count = [&](double mol) {
+      found += mol;
+      throughput += std::abs(mol);
+    };
+    for (std::size_t j = 0; j < ln_a.size(); ++j)
+      count(system.species()[j].made_of[i] * answer.molality[j] * answer.water_kg);
+    for (std::size_t k = 0; k < answer.solid_mol.size(); ++k)
+      count(system.solids()[k].made_of[i] * answer.solid_mol[k]);
+    for (std::size_t g = 0; g < task.gases.size(); ++g)
+      count(-system.gases()[task.gases[g].gas].made_of[i] * answer.gas_mol[g]);
+    if (task.pH && i == 0) count(-answer.held_ph_mol);
+    if (task.pH && i == task.pH->counter_ion)
+      count(answer.held_ph_mol / system.species()[task.pH->counter_ion].charge);
+    const double scale = std::max({std::abs(task.component_mol[i]), throughput, 1e-300});
+    raise(worst.mass_balance, (found - task.component_mol[i]) / scale);
+  }
+
+  for (std::size_t k = 0; k < answer.solid_mol.size(); ++k) {
+    const SolidRule rule = task.solids.empty() ? SolidRule::report_only : task.solids[k];
+    const double ln_index = answer.saturation_index[k] * std::log(10.0);
+    const bool present = answer.solid_mol[k] != 0 || rule == SolidRule::in_excess;
+    if (rule == SolidRule::report_only) continue;
+    if (present)
+      raise(worst.saturation, ln_index);
+    else if (solver.covers(k) && ln_index > 0)
+      raise(worst.saturation, ln_index);
+    if (rule == SolidRule::may_precipitate) raise(worst.negative_solid, std::min(0.0, answer.solid_mol[k]));
+  }
+  return worst;
+}
+
+}  // namespace bathwright::speciation

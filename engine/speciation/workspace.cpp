@@ -1,0 +1,172 @@
+#include "workspace.hpp"
+
+#include <algorithm>
+#include <cmath>
+#include <numbers>
+#include <numeric>
+
+namespace bathwright::speciation {
+namespace {
+
+/// Stoichiometric inverses are small fractions; rounding them keeps the totals of the new basis exact.
+double to_simple_fraction(double value) {
+  constexpr double denominator = 5040;
+  const double rounded = std::round(value * denominator) / denominator;
+  return std::abs(value - rounded) < 1e-10 ? rounded : value;
+}
+
+}  // namespace
+
+Workspace::Workspace(const Solver& solver, const Task& task) : model_(&solver.model()) {
+  const ChemicalSystem& system = solver.system();
+  const std::size_t all = system.components().size();
+  const auto rule = [&](std::size_t solid) {
+    return task.solids.empty() ? SolidRule::report_only : task.solids[solid];
+  };
+
+  std::vector<bool> present(all, false);
+  present[0] = true;  // water always brings H^+
+  for (std::size_t i = 0; i < all; ++i) present[i] = present[i] || task.component_mol[i] != 0;
+  const auto bring = [&](const std::vector<double>& made_of) {
+    for (std::size_t i = 0; i < all; ++i) present[i] = present[i] || made_of[i] != 0;
+  };
+  for (std::size_t k = 0; k < system.solids().size(); ++k)
+    if (rule(k) == SolidRule::in_excess) bring(system.solids()[k].made_of);
+  for (const HeldGas& held : task.gases) bring(system.gases()[held.gas].made_of);
+  if (task.pH) present[task.pH->counter_ion] = true;
+
+  std::vector<Index> row_of(all, -1);
+  Index rows = 0;
+  for (std::size_t i = 0; i < all; ++i)
+    if (present[i]) row_of[i] = rows++;
+  const auto possible = [&](const std::vector<double>& made_of) {
+    for (std::size_t i = 0; i < all; ++i)
+      if (made_of[i] != 0 && !present[i]) return false;
+    return true;
+  };
+  const auto dense = [&](const std::vector<double>& made_of) {
+    Vector column = Vector::Zero(rows);
+    for (std::size_t i = 0; i < all; ++i)
+      if (row_of[i] >= 0) column(row_of[i]) = made_of[i];
+    return column;
+  };
+
+  for (std::size_t j = 0; j < system.species().size(); ++j)
+    if (possible(system.species()[j].made_of)) species.push_back(j);
+  A.resize(rows, static_cast<Index>(species.size()));
+  water.resize(A.cols());
+  ln_K.resize(A.cols());
+  for (Index j = 0; j < A.cols(); ++j) {
+    const std::size_t at = species[static_cast<std::size_t>(j)];
+    A.col(j) = dense(system.species()[at].made_of);
+    water(j) = system.species()[at].water;
+    ln_K(j) = solver.ln_K_species()[at];
+  }
+  total = dense(task.component_mol);
+  total_water = task.water_kg * water_mol_per_kg;
+  water_kg = task.water_kg;
+
+  for (std::size_t k = 0; k < system.solids().size(); ++k) {
+    const SystemSolid& solid = system.solids()[k];
+    if (rule(k) == SolidRule::report_only || !possible(solid.made_of)) continue;
+    const bool excess = rule(k) == SolidRule::in_excess;
+    if (!excess && !solver.covers(k)) continue;
+    const Vector column = dense(solid.made_of);
+    phases.push_back({excess ? Phase::Kind::excess : Phase::Kind::precipitate, k, column, column, solid.water,
+                      solid.water, solver.ln_K_solids()[k], excess, 0});
+  }
+  for (const HeldGas& held : task.gases) {
+    const SystemSpecies& gas = system.gases()[held.gas];
+    const Vector column = dense(gas.made_of);
+    phases.push_back({Phase::Kind::gas, held.gas, column, column, gas.water, gas.water,
+                      solver.ln_K_gases()[held.gas] + std::log(held.pressure_bar), true, 0});
+  }
+  if (task.pH) {
+    Vector condition = Vector::Zero(rows), supply = Vector::Zero(rows);
+    condition(proton) = 1;
+    supply(proton) = 1;
+    const int z = system.species()[task.pH->counter_ion].charge;
+    supply(row_of[task.pH->counter_ion]) = -1.0 / z;
+    phases.push_back(
+        {Phase::Kind::ph, 0, condition, supply, 0, 0, -task.pH->pH * std::numbers::ln10, true, 0});
+  }
+
+  x = Vector::Zero(rows);
+  ln_gamma = Vector::Zero(A.cols());
+  full_molality_.assign(system.species().size(), 0);
+  full_ln_gamma_.assign(system.species().size(), 0);
+}
+
+Vector Workspace::ln_molality() const { return ln_K + A.transpose() * x + water * ln_aw - ln_gamma; }
+
+double Workspace::activity_coefficients(const Vector& molality, Vector& ln_g) {
+  for (std::size_t j = 0; j < species.size(); ++j)
+    full_molality_[species[j]] = molality(static_cast<Index>(j));
+  const double ln_water = model_->evaluate(full_molality_, full_ln_gamma_);
+  for (std::size_t j = 0; j < species.size(); ++j) ln_g(static_cast<Index>(j)) = full_ln_gamma_[species[j]];
+  return ln_water;
+}
+
+double Workspace::activity_coefficients(const Vector& molality, Vector& ln_g,
+                                        const std::vector<Index>& columns, Matrix& derivative) {
+  for (std::size_t j = 0; j < species.size(); ++j)
+    full_molality_[species[j]] = molality(static_cast<Index>(j));
+  std::vector<std::uint32_t> full_columns;
+  for (const Index j : columns)
+    full_columns.push_back(static_cast<std::uint32_t>(species[static_cast<std::size_t>(j)]));
+  full_derivative_.resize(full_ln_gamma_.size() * columns.size());
+  const double ln_water = model_->evaluate(full_molality_, full_ln_gamma_, full_columns, full_derivative_);
+  derivative.resize(count(), static_cast<Index>(columns.size()));
+  for (std::size_t j = 0; j < species.size(); ++j) {
+    ln_g(static_cast<Index>(j)) = full_ln_gamma_[species[j]];
+    for (std::size_t c = 0; c < columns.size(); ++c)
+      derivative(static_cast<Index>(j), static_cast<Index>(c)) =
+          full_derivative_[species[j] * columns.size() + c];
+  }
+  return ln_water;
+}
+
+void Workspace::rebase(const Vector& molality, double ln_a_water) {
+  // Gaussian elimination over the species in order of abundance picks the most abundant independent ones.
+  std::vector<Index> order(static_cast<std::size_t>(count()));
+  std::iota(order.begin(), order.end(), Index{0});
+  std::stable_sort(order.begin(), order.end(), [&](Index a, Index b) { return molality(a) > molality(b); });
+  std::vector<Index> chosen;
+  std::vector<Vector> eliminated;
+  std::vector<Index> pivots;
+  for (const Index j : order) {
+    Vector column = A.col(j);
+    for (std::size_t k = 0; k < eliminated.size(); ++k) column -= column(pivots[k]) * eliminated[k];
+    Index pivot = 0;
+    const double size = column.cwiseAbs().maxCoeff(&pivot);
+    if (size < 1e-9) continue;
+    eliminated.push_back(column / column(pivot));
+    pivots.push_back(pivot);
+    chosen.push_back(j);
+    if (static_cast<Index>(chosen.size()) == components()) break;
+  }
+  Matrix B(components(), components());
+  Vector K(components()), h(components());
+  for (Index k = 0; k < components(); ++k) {
+    const Index j = chosen[static_cast<std::size_t>(k)];
+    B.col(k) = A.col(j);
+    K(k) = ln_K(j);
+    h(k) = water(j);
+  }
+  const Matrix inverse = Matrix(B.inverse()).unaryExpr(&to_simple_fraction);
+  x = K + h * ln_a_water + B.transpose() * x;
+  A = (inverse * A).unaryExpr(&to_simple_fraction);
+  ln_K -= A.transpose() * K;
+  water -= A.transpose() * h;
+  total = inverse * total;
+  total_water -= total.dot(h);
+  for (Phase& phase : phases) {
+    phase.condition = inverse * phase.condition;
+    phase.supply = inverse * phase.supply;
+    phase.ln_K += phase.condition.dot(K);
+    phase.water -= phase.condition.dot(h);
+    phase.supply_water -= phase.supply.dot(h);
+  }
+}
+
+}  // namespace bathwright::speciation
