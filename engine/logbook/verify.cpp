@@ -58,7 +58,7 @@ class Walk {
   bool check_sequence(std::int64_t seq) {
     if (seq <= last_seq_)
       find(FindingKind::reordered, seq,
-           fmt::format("entry number {} stands behind number {}", seq, last_seq_));
+           fmt::format("entry number {} is out of order; {} was expected", seq, last_seq_ + 1));
     if (seq > last_seq_ + 1)
       find(FindingKind::gap, seq,
            seq == last_seq_ + 2 ? fmt::format("entry {} is missing", last_seq_ + 1)
@@ -85,6 +85,7 @@ class Walk {
   }
 
   void pass(std::int64_t seq, std::string hash, std::string at) {
+    if (seq <= last_seq_) return;  // a stray entry does not move the walk
     last_seq_ = seq;
     last_hash_ = std::move(hash);
     last_at_ = std::move(at);

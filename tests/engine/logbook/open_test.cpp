@@ -3,6 +3,7 @@
 #include <sys/wait.h>
 #include <unistd.h>
 
+#include <algorithm>
 #include <fstream>
 #include <functional>
 
@@ -27,6 +28,7 @@ void make_log(const fs::path& path) {
 std::vector<std::string> files_in(const fs::path& folder) {
   std::vector<std::string> names;
   for (const auto& file : fs::directory_iterator(folder)) names.push_back(file.path().filename().string());
+  std::sort(names.begin(), names.end());
   return names;
 }
 

@@ -1,6 +1,7 @@
 // Whatever is done to the file behind the log's back must be refused by its triggers or found by verify.
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <fstream>
 #include <random>
 
@@ -169,6 +170,10 @@ TEST_CASE("removed, moved and added entries are found", "[failure][logbook]") {
       {"an entry put at the end",
        "INSERT INTO entry SELECT 7, " + forged + "hash, 'forged' FROM entry WHERE seq = 6",
        {{changed, 7}}},
+      {"an entry numbered below 1",
+       "PRAGMA ignore_check_constraints = ON; INSERT INTO entry SELECT -5, " + forged +
+           "previous, 'forged' FROM entry WHERE seq = 1",
+       {{FindingKind::unreadable, 0}, {reordered, -5}, {changed, -5}}},
       {"a kind that does not exist", "UPDATE entry SET kind = 'gossip' WHERE seq = 4", {{changed, 4}}},
   };
   const HeldClock clock;
