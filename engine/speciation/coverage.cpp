@@ -1,0 +1,58 @@
+#include <algorithm>
+#include <bathwright/speciation/coverage.hpp>
+#include <cmath>
+#include <cstdio>
+
+namespace bathwright::speciation {
+
+Coverage coverage(const Solver& solver, const Equilibrium& answer) {
+  using Kind = activity::InteractionNote::Kind;
+  constexpr double noticed = 1e-3, significant = 0.01;  // mol/kg
+  Coverage found;
+  for (const activity::InteractionNote& note : solver.model().notes()) {
+    double least = std::numeric_limits<double>::infinity();
+    bool counter_ions = note.solutes.size() == 2;
+    int sign = 0;
+    for (const std::uint32_t i : note.solutes) {
+      least = std::min(least, answer.molality[i]);
+      const int z = solver.system().species()[i].charge;
+      sign = sign == 0 ? z : sign * z;
+    }
+    counter_ions = counter_ions && sign < 0;
+    if (!(least > noticed)) continue;
+    switch (note.kind) {
+      case Kind::missing:
+        found.missing.push_back(note.text);
+        if (counter_ions && least > significant) found.valid = false;
+        break;
+      case Kind::estimated:
+        found.warnings.push_back(note.text);
+        break;
+      case Kind::no_temperature_data:
+        found.warnings.push_back(note.text);
+        if (least > significant && std::abs(solver.temperature().v - 25) > 10) found.valid = false;
+        break;
+      case Kind::above_range:
+        if (answer.ionic_strength <= note.limit_molal) break;
+        found.warnings.push_back(note.text);
+        found.valid = false;
+        break;
+      case Kind::outside_model:
+        found.warnings.push_back(note.text);
+        found.valid = false;
+        break;
+    }
+  }
+  const double trusted = solver.model().trusted_ionic_strength();
+  if (answer.ionic_strength > trusted) {
+    char text[160];
+    std::snprintf(text, sizeof text,
+                  "ionic strength %.2f mol/kg is beyond the %.1f mol/kg up to which the model %s is trusted",
+                  answer.ionic_strength, trusted, std::string(activity::name(solver.model().kind())).c_str());
+    found.warnings.emplace_back(text);
+    found.valid = false;
+  }
+  return found;
+}
+
+}  // namespace bathwright::speciation
