@@ -57,34 +57,16 @@ Result<Quantity> read_quantity(std::string_view text, std::string_view where) {
   return Quantity{*base};
 }
 
-// The most there can be of anything, in the unit itself: the densest solid, pure liquid, 100 %.
+// The most there can be of anything, in the unit itself.
 double highest_possible(ConcentrationUnit unit) {
-  switch (unit) {
-    case ConcentrationUnit::grams_per_litre:
-    case ConcentrationUnit::milligrams_per_litre:
-    case ConcentrationUnit::ounces_per_us_gallon:
-    case ConcentrationUnit::ounces_per_imperial_gallon:
-    case ConcentrationUnit::pounds_per_us_gallon:
-    case ConcentrationUnit::troy_ounces_per_us_gallon:
-    case ConcentrationUnit::percent_mass_per_volume:
-    case ConcentrationUnit::ppm_mass_per_volume:
-      return dimension_of<KilogramsPerLitre>().highest * 1000 / direct_factor(unit);
-    case ConcentrationUnit::millilitres_per_litre:
-    case ConcentrationUnit::fluid_ounces_per_us_gallon:
-    case ConcentrationUnit::percent_by_volume:
-      return 1000 / direct_factor(unit);
-    case ConcentrationUnit::moles_per_litre:
-    case ConcentrationUnit::millimoles_per_litre:
-    case ConcentrationUnit::moles_per_kilogram_of_water:
-      return dimension_of<MolesPerLitre>().highest / (direct_factor(unit) > 0 ? direct_factor(unit) : 1);
-    case ConcentrationUnit::equivalents_per_litre:
-      return 4 * dimension_of<MolesPerLitre>().highest;
-    case ConcentrationUnit::percent_by_mass:
-      return 100;
-    case ConcentrationUnit::ppm_by_mass:
-      return 1e6;
-  }
-  return 0;
+  const Concentration one{1, unit};
+  const double per_one = direct_factor(unit);
+  if (grams_per_litre_if_direct(one)) return 1000 * dimension_of<KilogramsPerLitre>().highest / per_one;
+  if (moles_per_litre_if_direct(one)) return dimension_of<MolesPerLitre>().highest / per_one;
+  if (millilitres_per_litre_if_direct(one)) return 1000 / per_one;
+  if (unit == ConcentrationUnit::percent_by_mass) return 100;
+  if (unit == ConcentrationUnit::ppm_by_mass) return 1e6;
+  return 1000;  // mol/kg of water: 98 % sulfuric acid has 500
 }
 
 constexpr double most_equivalents = 12;  // beyond any reaction a bench uses

@@ -230,7 +230,7 @@ const Dimension& dimension_of<Hours>() {
   return d;
 }
 template <>
-const Dimension& dimension_of<MolesPerLitre>() {  // pure water is 55 mol/L
+const Dimension& dimension_of<MolesPerLitre>() {  // water itself has 55 mol/L
   static constexpr Dimension d{"a molar concentration", molarities, molarity_traps, molarity_symbols, 0, 60};
   return d;
 }

@@ -130,6 +130,16 @@ TEST_CASE("a nickel sulfate bath of one salt", "[reference][matter]") {
   CHECK(ions.range_warnings(amounts, 0.850, {55}).empty());
 }
 
+TEST_CASE("boric acid takes its apparent molar volume", "[unit][matter]") {
+  // By hand: 1 kg of water at 25 degC is 1/0.997045 L; 0.5 mol at 39.2 cm3/mol add 0.0196 L; 30.916 g
+  // dissolved.
+  const auto boric = solution({"B(OH)3"});
+  const std::vector<double> mol = {0.5};
+  CHECK(boric.volume_L(mol, 1, room) == Approx(1.022564).margin(2e-6).epsilon(0));
+  CHECK(boric.density(mol, 1, room).v == Approx(1.030916 / 1.022564).margin(2e-6).epsilon(0));
+  CHECK(boric.warnings().empty());
+}
+
 TEST_CASE("ions give the density of the salts they came from", "[property][matter]") {
   for (const auto& [cation, anion, salt] :
        std::vector<std::tuple<std::string, std::string, std::string>>{{"Na^+", "SO4^2-", "Na2SO4"},
