@@ -141,8 +141,8 @@ TEST_CASE("reading leaves the folder as it was and appends nothing", "[failure][
 
 TEST_CASE("a name that would mean something in a URI is only a name", "[unit][logbook]") {
   const TempFolder folder;
-  make_log(folder / "50% of line #1?mode=memory.log");
-  CHECK(files_in(folder.path()) == std::vector<std::string>{"50% of line #1?mode=memory.log"});
+  make_log(folder / "50%41 of line #1?mode=memory.log");
+  CHECK(files_in(folder.path()) == std::vector<std::string>{"50%41 of line #1?mode=memory.log"});
 }
 
 TEST_CASE("opening with create again keeps what is there", "[unit][logbook]") {
