@@ -8,10 +8,10 @@
 #include "salt_table.hpp"
 
 namespace bathwright::matter {
-double SaltCoefficients::apparent_density(double solute_fraction, units::Celsius t) const {
+double SaltCoefficients::apparent_L_per_kg(double solute_fraction, units::Celsius t) const {
   const double shifted = t.v + c4;
-  return (c0 * solute_fraction + c1) * std::exp(1e-6 * shifted * shifted) /
-         (solute_fraction + c2 + c3 * t.v) / 1000;
+  return 1000 * (solute_fraction + c2 + c3 * t.v) /
+         ((c0 * solute_fraction + c1) * std::exp(1e-6 * shifted * shifted));
 }
 
 Result<units::KilogramsPerLitre> mixture_density(std::span<const DissolvedSalt> salts, units::Celsius t) {
@@ -44,7 +44,7 @@ Result<units::KilogramsPerLitre> mixture_density(std::span<const DissolvedSalt> 
 
   double litres_per_kg = (1 - solute_fraction) / water_density(t).v;
   for (std::size_t i = 0; i < salts.size(); ++i) {
-    litres_per_kg += salts[i].mass_fraction / fits[i]->apparent_density(solute_fraction, t);
+    litres_per_kg += salts[i].mass_fraction * fits[i]->apparent_L_per_kg(solute_fraction, t);
   }
   return units::KilogramsPerLitre{1 / litres_per_kg};
 }
@@ -126,8 +126,8 @@ double SolutionDensity::volume_L(std::span<const double> mol, double water_kg, u
   for (const Solute& solute : solutes_) {
     if (solute.volume == Solute::Volume::water) continue;
     const double kg = solute_kg(solute, mol, half);
-    litres += solute.volume == Solute::Volume::fitted ? kg / solute.fit.apparent_density(solute_fraction, t)
-                                                      : kg * solute.litres_per_kg;
+    litres += kg * (solute.volume == Solute::Volume::fitted ? solute.fit.apparent_L_per_kg(solute_fraction, t)
+                                                            : solute.litres_per_kg);
   }
   return litres;
 }

@@ -231,6 +231,8 @@ TEST_CASE("what cannot be a reading is refused", "[failure][units]") {
   CHECK_FALSE(read_density("1234 g/mL"));
   CHECK_FALSE(read_concentration("-3 g/L"));
   CHECK_FALSE(read_concentration("101 % w/w"));
+  CHECK_FALSE(read_concentration("2000000 ppm w/w"));
+  CHECK_FALSE(read_concentration("1001 mL/L"));
   CHECK_FALSE(read_concentration("99999 g/L"));
   CHECK_FALSE(read_concentration("0.2 N (0 eq/mol)"));
   CHECK_FALSE(read_concentration("0.2 N (two)"));

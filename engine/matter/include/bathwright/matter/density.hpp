@@ -23,8 +23,9 @@ struct SaltCoefficients {
   double c4 = 0;                                                  ///< degC
   double lowest_C = 0, highest_C = 0, highest_mass_fraction = 0;  ///< the range of the fit
 
-  /// rho_app in kg/L. solute_fraction: kg of all solutes per kg of solution.
-  [[nodiscard]] double apparent_density(double solute_fraction, units::Celsius t) const;
+  /// 1/rho_app in L/kg, which passes smoothly through zero where rho_app has a pole (dilute 2-2 sulfates
+  /// contract the water). solute_fraction: kg of all solutes per kg of solution.
+  [[nodiscard]] double apparent_L_per_kg(double solute_fraction, units::Celsius t) const;
 };
 
 /// Density of a mixture of salts in water.
