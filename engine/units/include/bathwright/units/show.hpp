@@ -9,8 +9,8 @@
 
 namespace bathwright::units {
 
-inline constexpr int usual_digits =
-    4;  ///< significant digits: about what a burette or a balance in a shop gives
+/// Significant digits: about what a burette or a balance in a shop gives.
+inline constexpr int usual_digits = 4;
 
 /// `value` rounded to `digits` (1 to 17) significant digits, decimal point, whatever the locale.
 /// No exponent for 1e-6 <= |value| < 1e15; "nan", "inf" and "-inf" for what is not finite.
@@ -19,8 +19,7 @@ inline constexpr int usual_digits =
 /// A number, a space and the unit's symbol, for Litres, Kilograms, Celsius, Decimetres, SquareDecimetres,
 /// KilogramsPerLitre, AmperesPerSquareDecimetre, Hours and MolesPerLitre.
 ///   unit  any spelling read.hpp accepts for the quantity. Empty or unknown: the base unit, with its own
-///   symbol,
-///         so that a number is never mislabelled.
+///         symbol, so that a number is never mislabelled.
 template <class UnitTag>
 [[nodiscard]] std::string show(Quantity<UnitTag> q, std::string_view unit = {}, int digits = usual_digits);
 
