@@ -1,0 +1,76 @@
+// From a tank's state to an addition sheet: how much of what, in which order and portions, and what each step
+// does. Read next: bath/chemistry.hpp, which computes every prediction here.
+#pragma once
+
+#include <bathwright/bath/chemistry.hpp>
+
+namespace bathwright::dosing {
+
+/// One question asked of a step, with its answer in words.
+struct Check {
+  std::string name;  ///< "boric acid at 18 degC"
+  bool ok = true;
+  std::string detail;  ///< "12 kg more would dissolve"
+};
+
+/// The whole amount of one chemical.
+struct Addition {
+  std::string chemical;  ///< stock id
+  std::string name;      ///< "nickel sulfate hexahydrate"
+  double kg = 0;
+  double amount = 0;  ///< in `unit`
+  std::string unit;   ///< "kg", or "L" for a liquid
+  double cost = 0;    ///< in the tank's currency
+};
+
+/// One portion carried to the tank.
+struct Step {
+  int number = 0;
+  std::string chemical, name, unit;
+  double amount = 0, kg = 0;
+  int portion = 1, portions = 1;        ///< "2 of 3"
+  std::optional<double> dissolve_in_L;  ///< water to dilute or dissolve it in first, taken from the fill
+  std::string how;
+  double wait_h = 0;         ///< before the next step
+  bath::TankView predicted;  ///< after this step (levels, pH, volume, headroom in log units)
+  std::vector<Check> checks;
+};
+
+struct Plan {
+  std::string kind;       ///< "least cost"
+  bool feasible = false;  ///< every aim met, every check passed
+  double cost = 0;
+  double salt_load_mol = 0;  ///< ions brought in, mol: what makes the next bleed larger
+  /// Chance that every controlled quantity ends inside its window, from the analysis' uncertainty alone,
+  /// errors taken as independent and normal; nothing where no uncertainty was given.
+  std::optional<double> probability_in_window;
+  std::vector<Addition> additions;  ///< in order of addition; empty when nothing is needed
+  std::vector<Step> steps;
+  bath::TankView final_view;
+  bath::TankState final_state;
+  std::vector<std::string> unmet;  ///< aims that cannot be reached with this shelf, and by how much
+};
+
+struct Refusal {
+  std::string reason, rule;
+};
+
+struct AdditionSheet {
+  bath::TankView now;
+  std::vector<Plan> plans;  ///< best first
+  std::vector<Refusal> refused;
+  std::vector<std::string> cautions;
+};
+
+/// Plans the additions that bring the tank from `now` to its aims at least cost, filled to the mark.
+///   uncertainty  one standard uncertainty of the present level, g/L by quantity id (may be empty)
+/// Amounts are >= 0; hydrate water, the water of liquids and displacement are in the volume; pH by full
+/// equilibrium. Each step is speciated at the working and the idle temperature. A linear programme in the
+/// amounts is solved again with the true volume and acid demand until neither moves (1e-9 relative); first
+/// the aims (relative deviation), then the cost. An aim that cannot be reached is reported in `unmet` with
+/// the nearest plan, not as an error. Fails when the state itself cannot be solved.
+Result<AdditionSheet> plan_additions(const bath::Tank& tank, const bath::Chemistry& chemistry,
+                                     const bath::TankState& now,
+                                     const std::map<std::string, double>& uncertainty = {});
+
+}  // namespace bathwright::dosing

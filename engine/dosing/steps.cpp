@@ -1,0 +1,165 @@
+#include "steps.hpp"
+
+#include <algorithm>
+#include <bathwright/units/show.hpp>
+#include <cmath>
+
+namespace bathwright::dosing {
+namespace {
+
+using bath::AdditionRule;
+using bath::BathType;
+using bath::Chemistry;
+using bath::Headroom;
+using bath::Tank;
+using bath::TankState;
+using bath::TankView;
+using units::significant;
+
+const AdditionRule* rule_for(const BathType& type, const std::string& stock_id) {
+  const auto found = std::find_if(type.additions.begin(), type.additions.end(),
+                                  [&](const AdditionRule& rule) { return rule.supply == stock_id; });
+  return found == type.additions.end() ? nullptr : &*found;
+}
+
+/// Water comes first; what the bath type does not order comes last.
+std::uint32_t place(const BathType& type, const Portioned& one) {
+  if (one.item->stock.formula == "H2O") return 0;
+  const AdditionRule* rule = rule_for(type, one.item->stock.id);
+  return rule ? rule->order : std::numeric_limits<std::uint32_t>::max();
+}
+
+/// Whole portions that keep each within its largest single rise and pH step.
+int portions_of(const BathType& type, const Portioned& one, double volume_L, double pH_step) {
+  const AdditionRule* rule = rule_for(type, one.item->stock.id);
+  double largest_rise =
+      one.item->largest_rise_g_per_L.value_or(rule ? rule->largest_rise_g_per_L : bath::not_given);
+  constexpr double rounding = 1e-9;  // an addition of exactly the rule's size is one portion
+  int portions = 1;
+  if (largest_rise > 0)
+    portions = std::max(
+        portions, static_cast<int>(
+                      std::ceil(one.kg * one.item->stock.assay * 1000 / volume_L / largest_rise - rounding)));
+  if (rule && rule->largest_pH_step > 0)
+    portions =
+        std::max(portions, static_cast<int>(std::ceil(std::abs(pH_step) / rule->largest_pH_step - rounding)));
+  return portions;
+}
+
+std::string degrees(units::Celsius t) { return significant(t.v, 3) + " degC"; }
+
+/// One check per watched solid and temperature.
+void check_solids(const Chemistry& chemistry, const TankView& view, std::vector<Check>& checks) {
+  for (const Headroom& room : view.headroom) {
+    if (room.slow) continue;
+    const auto judge = [&](double log10_room, bool covered, units::Celsius t) {
+      if (!covered) return;
+      const bool ok = log10_room >= 0;
+      checks.push_back({room.solid + " at " + degrees(t), ok,
+                        (ok ? "below saturation by " : "above saturation by ") +
+                            significant(std::pow(10, std::abs(log10_room)), 3) + " times (ion product)" +
+                            (ok || room.sign_in_tank.empty() ? "" : ": " + room.sign_in_tank)});
+    };
+    judge(room.working_log10, room.covers_working, chemistry.working_temperature());
+    judge(room.idle_log10, room.covers_idle, chemistry.idle_temperature());
+  }
+}
+
+void check_volume(const Tank& tank, const TankView& view, std::vector<Check>& checks) {
+  const double brim = tank.working_volume.v + tank.freeboard.v;
+  checks.push_back({"freeboard", view.volume_L <= brim,
+                    significant(view.volume_L, 5) + " L of " + significant(brim, 5) + " L to the brim"});
+}
+
+void check_pH(const Tank& tank, const BathType& type, const TankView& view, std::vector<Check>& checks) {
+  double low = -HUGE_VAL, high = HUGE_VAL;
+  if (const bath::Aim* aim = tank.aim("pH")) low = aim->low, high = aim->high;
+  for (const bath::Window& window : type.windows)
+    if (window.subject == "pH") {
+      low = std::isnan(window.stop_low) ? std::min(low, window.low) : window.stop_low;
+      high = std::isnan(window.stop_high) ? std::max(high, window.high) : window.stop_high;
+    }
+  const bool ok = !(view.pH < low) && !(view.pH > high);
+  checks.push_back({"pH on the way", ok,
+                    "pH " + significant(view.pH, 3) + ", stop below " + significant(low, 3) + " and above " +
+                        significant(high, 3)});
+}
+
+Addition addition_of(const bath::ShelfItem& item, double kg) {
+  Addition addition;
+  addition.chemical = item.stock.id;
+  addition.name = item.stock.name;
+  addition.kg = kg;
+  addition.unit = item.stock.liquid ? "L" : "kg";
+  addition.amount = item.stock.liquid ? kg / item.stock.kg_per_L : kg;
+  addition.cost = item.priced_per == bath::ShelfItem::Per::litre ? item.price * kg / item.stock.kg_per_L
+                                                                 : item.price * kg;
+  return addition;
+}
+
+}  // namespace
+
+Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState state,
+                         std::vector<Portioned> amounts) {
+  const BathType& type = chemistry.type();
+  std::stable_sort(amounts.begin(), amounts.end(),
+                   [&](const Portioned& a, const Portioned& b) { return place(type, a) < place(type, b); });
+  Steps result;
+  for (const Portioned& one : amounts) {
+    const TankState whole = Chemistry::after(state, *one.brings, one.kg);
+    const auto before = chemistry.speciate(state), after = chemistry.speciate(whole);
+    if (!before) return before.problems();
+    if (!after) return after.problems();
+    const AdditionRule* rule = rule_for(type, one.item->stock.id);
+    const int portions = portions_of(type, one, chemistry.volume_L(whole), after->pH() - before->pH());
+    const Addition addition = addition_of(*one.item, one.kg);
+    for (int portion = 1; portion <= portions; ++portion) {
+      Step step;
+      step.number = static_cast<int>(result.steps.size()) + 1;
+      step.chemical = addition.chemical;
+      step.name = addition.name;
+      step.unit = addition.unit;
+      step.kg = one.kg / portions;
+      step.amount = addition.amount / portions;
+      step.portion = portion;
+      step.portions = portions;
+      if (rule) step.how = rule->how;
+      if (rule) step.wait_h = rule->wait_h;
+      state = Chemistry::after(std::move(state), *one.brings, step.kg);
+      auto predicted = chemistry.quick_view(state);
+      if (!predicted) return predicted.problems();
+      step.predicted = *std::move(predicted);
+      check_volume(tank, step.predicted, step.checks);
+      check_pH(tank, type, step.predicted, step.checks);
+      check_solids(chemistry, step.predicted, step.checks);
+      result.steps.push_back(std::move(step));
+    }
+    result.additions.push_back(addition);
+  }
+  result.final_state = std::move(state);
+  return result;
+}
+
+std::vector<std::string> cautions_for(const Tank& tank, const BathType& type, const Plan& plan) {
+  std::vector<std::string> cautions;
+  const auto say = [&](const std::string& text) {
+    if (std::find(cautions.begin(), cautions.end(), text) == cautions.end()) cautions.push_back(text);
+  };
+  const auto added = [&](const std::string& id) {
+    return std::any_of(plan.additions.begin(), plan.additions.end(),
+                       [&](const Addition& a) { return a.chemical == id; });
+  };
+  for (const bath::Level level : {bath::Level::stop, bath::Level::warn, bath::Level::notice})
+    for (const bath::Caution& caution : type.cautions)
+      if (caution.level == level &&
+          (caution.subject.empty() || type.quantity(caution.subject) || added(caution.subject)))
+        say(caution.text);
+  for (const Addition& addition : plan.additions)
+    if (const bath::ShelfItem* item = tank.on_shelf(addition.chemical))
+      for (const std::string& caution : item->stock.cautions) say(item->stock.name + ": " + caution);
+  say("The supplier's safety data sheet, local codes and licensed practice decide; this sheet does not "
+      "replace them.");
+  return cautions;
+}
+
+}  // namespace bathwright::dosing
