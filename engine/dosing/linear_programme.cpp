@@ -16,7 +16,7 @@ void LinearProgramme::add_row(std::vector<double> coefficients, double lower, do
 }
 
 Result<std::vector<double>> solve(const LinearProgramme& p) {
-  constexpr double no_bound = std::numeric_limits<double>::max();  // what Clp reads as infinite
+  static constexpr double no_bound = std::numeric_limits<double>::max();  // what Clp reads as infinite
   const auto bound = [](double value) { return std::clamp(value, -no_bound, no_bound); };
   const int columns = static_cast<int>(p.objective.size()), rows = static_cast<int>(p.rows.size());
   std::vector<CoinBigIndex> start{0};
