@@ -5,6 +5,8 @@
 #include <numbers>
 #include <vector>
 
+#include "active_set.hpp"
+
 namespace bathwright::speciation {
 namespace {
 
@@ -153,40 +155,6 @@ bool newton(Workspace& w, const NullSpace& space, double tolerance, int& iterati
   return false;
 }
 
-double ln_saturation(const Workspace& w, const Phase& phase) {
-  return phase.condition.dot(w.x) + phase.water * w.ln_aw - phase.ln_K;
-}
-
-/// Lets a supersaturated phase in. When its condition depends on active ones, the one that runs out first as
-/// it forms gives way.
-bool let_in(Workspace& w, std::size_t entering) {
-  w.phases[entering].active = true;
-  w.phases[entering].mol = 0;
-  if (null_space(w).independent) return true;
-  std::vector<std::size_t> active;
-  for (std::size_t k = 0; k < w.phases.size(); ++k)
-    if (w.phases[k].active && k != entering) active.push_back(k);
-  Matrix S(w.components(), static_cast<Index>(active.size()));
-  for (std::size_t c = 0; c < active.size(); ++c)
-    S.col(static_cast<Index>(c)) = w.phases[active[c]].condition;
-  const Vector mix = S.colPivHouseholderQr().solve(w.phases[entering].condition);
-  std::size_t leaving = w.phases.size();
-  double least = 0;
-  for (std::size_t c = 0; c < active.size(); ++c) {
-    const Phase& phase = w.phases[active[c]];
-    if (mix(static_cast<Index>(c)) < 1e-9 || phase.kind != Phase::Kind::precipitate) continue;
-    const double lasts = phase.mol / mix(static_cast<Index>(c));
-    if (leaving == w.phases.size() || lasts < least) leaving = active[c], least = lasts;
-  }
-  if (leaving == w.phases.size()) {
-    w.phases[entering].active = false;
-    return false;
-  }
-  w.phases[leaving].active = false;
-  w.phases[leaving].mol = 0;
-  return null_space(w).independent;
-}
-
 }  // namespace
 
 bool solve_convex(Workspace& w, double tolerance, int& iterations) {
@@ -216,7 +184,7 @@ bool solve_convex(Workspace& w, double tolerance, int& iterations) {
         if (above > largest) worst = k, largest = above;
       }
     if (worst == w.phases.size()) return true;
-    if (!let_in(w, worst)) return false;
+    if (!let_in(w, worst, WaterActivity::fixed)) return false;
   }
   return false;
 }

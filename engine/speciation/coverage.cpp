@@ -43,6 +43,11 @@ Coverage coverage(const Solver& solver, const Equilibrium& answer) {
         break;
     }
   }
+  if (!answer.stable) {
+    found.warnings.emplace_back(
+        "the activity model is outside its range here: its Gibbs energy no longer curves upward");
+    found.valid = false;
+  }
   const double trusted = solver.model().trusted_ionic_strength();
   if (answer.ionic_strength > trusted) {
     char text[160];

@@ -1,10 +1,12 @@
 #include <algorithm>
 #include <bathwright/speciation/solver.hpp>
 #include <cmath>
+#include <cstdio>
 #include <limits>
 #include <numbers>
 #include <numeric>
 
+#include "active_set.hpp"
 #include "convex_dual.hpp"
 #include "coupled_newton.hpp"
 #include "verify.hpp"
@@ -13,11 +15,20 @@ namespace bathwright::speciation {
 namespace {
 
 constexpr double saturated = 1e-9;        // ln units
-constexpr double scarce_fraction = 1e-8;  // a free ion below this share of its total needs a better basis
+constexpr double scarce_fraction = 1e-6;  // a free ion below this share of its total needs a better basis
 constexpr double covered_margin_C = 1;
 
 Problem not_converged(const std::string& what) {
   return {Fault::not_converged, "", what, "", "Check the amounts; report the input if they are right."};
+}
+
+std::string failed_check(const Residuals& r) {
+  char text[200];
+  std::snprintf(text, sizeof text,
+                "the answer does not pass its check: mass balance %.2g, mass action %.2g, saturation %.2g, "
+                "negative solid %.2g",
+                r.mass_balance, r.mass_action, r.saturation, r.negative_solid);
+  return text;
 }
 
 Vector molalities(const Workspace& w) { return w.ln_molality().array().min(7.0).exp().matrix(); }
@@ -45,27 +56,34 @@ void balance_water(Workspace& w) {
   w.water_kg = std::clamp(liquid, 0.2 * w.water_kg, 5 * w.water_kg);
 }
 
-double ln_saturation(const Workspace& w, const Phase& phase) {
-  return phase.condition.dot(w.x) + phase.water * w.ln_aw - phase.ln_K;
-}
-
-/// Coupled Newton, with the active set put right between runs.
+/// Coupled Newton, one change of the active set at a time until it settles.
 bool finish(Workspace& w, int& iterations) {
-  const std::size_t most = 4 + 2 * w.phases.size();
+  const std::size_t most = 10 + 4 * w.phases.size();
   for (std::size_t change = 0; change < most; ++change) {
     if (!solve_coupled(w, iterations)) return false;
-    bool settled = true;
-    for (Phase& phase : w.phases) {
+    // Largest violation first; from half-way on the first one found, so that no cycle can last.
+    const bool first = change > most / 2;
+    Phase* leaving = nullptr;
+    std::size_t entering = w.phases.size();
+    double least = 0, largest = saturated;
+    for (std::size_t k = 0; k < w.phases.size(); ++k) {
+      Phase& phase = w.phases[k];
       if (phase.kind != Phase::Kind::precipitate) continue;
-      const bool leaves = phase.active && phase.mol < 0;
-      const bool enters = !phase.active && ln_saturation(w, phase) > saturated;
-      if (!leaves && !enters) continue;
-      settled = false;
-      if (leaves) phase.active = false, phase.mol = 0;
+      if (phase.active) {
+        if (phase.mol < least && !(first && leaving)) leaving = &phase, least = phase.mol;
+      } else if (const double above = ln_saturation(w, phase);
+                 above > largest && !(first && entering < w.phases.size())) {
+        entering = k, largest = above;
+      }
     }
-    if (settled) return true;
-    // The convex solver chooses what enters (and what gives way) at the present coefficients.
-    if (!solve_convex(w, 1e-6, iterations)) return false;
+    if (leaving) {
+      leaving->active = false;
+      leaving->mol = 0;
+    } else if (entering == w.phases.size()) {
+      return true;
+    } else if (!let_in(w, entering, WaterActivity::free)) {
+      return false;
+    }
   }
   return false;
 }
@@ -84,6 +102,84 @@ bool approach(Workspace& w, int& iterations) {
     last = change;
   }
   return false;
+}
+
+/// Starts from a dilute solution, where everything is easy, and takes the water away again in steps that
+/// adapt.
+bool concentrate(Workspace& w, int& iterations) {
+  constexpr double least_step = 0.01;  // in ln of the water
+  const double water = w.total_water;
+  double ln_dilution = std::log(100.0), step = 0.7;
+  w.total_water = water * std::exp(ln_dilution);
+  w.water_kg *= std::exp(ln_dilution);
+  w.ln_gamma.setZero();
+  w.ln_aw = 0;
+  cold_start(w);
+  if (!solve_convex(w, 1e-3, iterations) || !finish(w, iterations)) return false;
+  while (ln_dilution > 0) {
+    const Workspace start = w;
+    const double next = std::max(0.0, ln_dilution - step);
+    w.total_water = water * std::exp(next);
+    w.water_kg *= std::exp(next - ln_dilution);
+    for (Index i = 0; i < w.components(); ++i)
+      if (i != w.proton) w.x(i) += ln_dilution - next;
+    if (finish(w, iterations)) {
+      ln_dilution = next;
+      step *= 1.5;
+    } else {
+      w = start;
+      step /= 3;
+      if (step < least_step) return false;  // w stands at the last solution found
+    }
+  }
+  return true;
+}
+
+/// Why no answer exists where the solution could be followed only down to `reached`.
+Problem beyond_reach(const Workspace& reached, const Task& task) {
+  constexpr double concentrated = 6;  // ionic strength, mol/kg: most parameters were fitted to less
+  const Vector m = molalities(reached);
+  double I = 0;
+  for (Index j = 0; j < reached.count(); ++j) I += 0.5 * m(j) * reached.charge(j) * reached.charge(j);
+  const double total_kg = reached.total_water / water_mol_per_kg;
+  char text[240];
+  if (reached.water_kg < 0.05 * total_kg) {
+    std::snprintf(
+        text, sizeof text,
+        "no liquid is left: with %.3g kg of water, %.2g kg stay liquid and the rest is bound in crystals",
+        total_kg, reached.water_kg);
+    return {Fault::out_of_range, "", text, "a solution", "Use less salt or more water."};
+  }
+  if (I < concentrated) return not_converged("the equilibrium did not converge");
+  std::snprintf(text, sizeof text,
+                "the activity model has no equilibrium at this strength: it follows the solution from the "
+                "dilute side to %.4g kg of "
+                "water (given: %.4g kg), ionic strength %.1f mol/kg, water activity %.2f",
+                total_kg, task.water_kg, I, std::exp(reached.ln_aw));
+  return {Fault::out_of_range, "", text, "a solution within the range of the interaction parameters",
+          "Use less salt or more water."};
+}
+
+/// Whether the Gibbs energy curves upward in every direction at the answer: 1 + sqrt(m) G sqrt(m) positive
+/// definite over the solutes that are not traces. Where it does not, the model has left its range and may
+/// have other solutions.
+bool curves_upward(Workspace& w) {
+  const Vector m = molalities(w);
+  std::vector<Index> abundant;
+  for (Index j = 0; j < w.count(); ++j)
+    if (m(j) > 1e-6 * m.sum()) abundant.push_back(j);
+  Vector ln_gamma(w.count());
+  Matrix G;
+  w.activity_coefficients(m, ln_gamma, abundant, G);
+  const auto size = static_cast<Index>(abundant.size());
+  Matrix curvature(size, size);
+  for (Index r = 0; r < size; ++r)
+    for (Index c = 0; c < size; ++c) {
+      const Index i = abundant[static_cast<std::size_t>(r)], j = abundant[static_cast<std::size_t>(c)];
+      curvature(r, c) = (r == c ? 1 : 0) + std::sqrt(m(i) * m(j)) * G(i, c);
+    }
+  curvature = (curvature + curvature.transpose()) / 2;
+  return Eigen::LLT<Matrix>(curvature).info() == Eigen::Success;
 }
 
 bool scarce(const Workspace& w) {
@@ -123,7 +219,7 @@ Outcome check(const ChemicalSystem& system, const Task& task) {
   return Done{};
 }
 
-Equilibrium answer_from(const Workspace& w, const Solver& solver, const Task& task, int iterations) {
+Equilibrium answer_from(Workspace& w, const Solver& solver, const Task& task, int iterations) {
   const ChemicalSystem& system = solver.system();
   Equilibrium answer;
   const std::size_t count = system.species().size();
@@ -176,6 +272,7 @@ Equilibrium answer_from(const Workspace& w, const Solver& solver, const Task& ta
         break;
     }
   }
+  answer.stable = curves_upward(w);
   answer.residuals = verify(solver, task, answer);
   return answer;
 }
@@ -227,12 +324,13 @@ Result<Equilibrium> Solver::solve(const Task& task) const {
     found = solve_convex(w, 1e-3, iterations);
   }
   found = found && finish(w, iterations);
-  if (!found) {
+  const auto again = [&](auto&& way) {
     w = Workspace(*this, task);
     w.ln_aw = w.activity_coefficients(guess, w.ln_gamma);
     cold_start(w);
-    found = approach(w, iterations) && finish(w, iterations);
-  }
+    return way(w, iterations) && finish(w, iterations);
+  };
+  found = found || again(approach) || again(concentrate);
   if (found && scarce(w)) {
     w.rebase(molalities(w), w.ln_aw);
     found = solve_coupled(w, iterations);
@@ -243,9 +341,7 @@ Result<Equilibrium> Solver::solve(const Task& task) const {
   Equilibrium answer = answer_from(w, *this, task, iterations);
   const Residuals& r = answer.residuals;
   if (r.mass_balance > 1e-12 || r.mass_action > 1e-10 || r.saturation > 1e-8 || r.negative_solid > 0)
-    return not_converged("the answer does not pass its check: mass balance " +
-                         std::to_string(r.mass_balance) + ", mass action " + std::to_string(r.mass_action) +
-                         ", saturation " + std::to_string(r.saturation));
+    return not_converged(failed_check(r));
   return answer;
 }
 

@@ -3,7 +3,6 @@
 #include <algorithm>
 #include <cmath>
 #include <numbers>
-#include <numeric>
 
 namespace bathwright::speciation {
 namespace {
@@ -56,10 +55,12 @@ Workspace::Workspace(const Solver& solver, const Task& task) : model_(&solver.mo
   A.resize(rows, static_cast<Index>(species.size()));
   water.resize(A.cols());
   ln_K.resize(A.cols());
+  charge.resize(A.cols());
   for (Index j = 0; j < A.cols(); ++j) {
     const std::size_t at = species[static_cast<std::size_t>(j)];
     A.col(j) = dense(system.species()[at].made_of);
     water(j) = system.species()[at].water;
+    charge(j) = system.species()[at].charge;
     ln_K(j) = solver.ln_K_species()[at];
   }
   total = dense(task.component_mol);
@@ -127,31 +128,39 @@ double Workspace::activity_coefficients(const Vector& molality, Vector& ln_g,
 }
 
 void Workspace::rebase(const Vector& molality, double ln_a_water) {
-  // Gaussian elimination over the species in order of abundance picks the most abundant independent ones.
-  std::vector<Index> order(static_cast<std::size_t>(count()));
-  std::iota(order.begin(), order.end(), Index{0});
-  std::stable_sort(order.begin(), order.end(), [&](Index a, Index b) { return molality(a) > molality(b); });
-  std::vector<Index> chosen;
+  // Gaussian elimination over the species and present solids in order of abundance picks the most abundant
+  // independent ones. A solid in the basis keeps the noise of its amount out of what is left dissolved.
+  struct Candidate {
+    double mol;
+    const double* made_of;
+    double ln_K, water;
+  };
+  std::vector<Candidate> order;
+  for (Index j = 0; j < count(); ++j)
+    order.push_back({molality(j) * water_kg, A.col(j).data(), ln_K(j), water(j)});
+  for (const Phase& phase : phases)
+    if (phase.kind == Phase::Kind::precipitate && phase.active)
+      order.push_back({phase.mol, phase.condition.data(), -phase.ln_K, phase.water});
+  std::stable_sort(order.begin(), order.end(),
+                   [](const Candidate& a, const Candidate& b) { return a.mol > b.mol; });
+  Matrix B(components(), components());
+  Vector K(components()), h(components());
   std::vector<Vector> eliminated;
   std::vector<Index> pivots;
-  for (const Index j : order) {
-    Vector column = A.col(j);
+  for (const Candidate& candidate : order) {
+    const auto chosen = static_cast<Index>(eliminated.size());
+    if (chosen == components()) break;
+    const Eigen::Map<const Vector> made_of(candidate.made_of, components());
+    Vector column = made_of;
     for (std::size_t k = 0; k < eliminated.size(); ++k) column -= column(pivots[k]) * eliminated[k];
     Index pivot = 0;
     const double size = column.cwiseAbs().maxCoeff(&pivot);
     if (size < 1e-9) continue;
+    B.col(chosen) = made_of;
+    K(chosen) = candidate.ln_K;
+    h(chosen) = candidate.water;
     eliminated.push_back(column / column(pivot));
     pivots.push_back(pivot);
-    chosen.push_back(j);
-    if (static_cast<Index>(chosen.size()) == components()) break;
-  }
-  Matrix B(components(), components());
-  Vector K(components()), h(components());
-  for (Index k = 0; k < components(); ++k) {
-    const Index j = chosen[static_cast<std::size_t>(k)];
-    B.col(k) = A.col(j);
-    K(k) = ln_K(j);
-    h(k) = water(j);
   }
   const Matrix inverse = Matrix(B.inverse()).unaryExpr(&to_simple_fraction);
   x = K + h * ln_a_water + B.transpose() * x;

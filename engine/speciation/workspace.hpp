@@ -41,7 +41,7 @@ class Workspace {
   double activity_coefficients(const Vector& molality, Vector& ln_gamma, const std::vector<Index>& columns,
                                Matrix& derivative);
 
-  /// Rewrites everything over the most abundant independent species. x moves with it.
+  /// Rewrites everything over the most abundant independent species and present solids. x moves with it.
   void rebase(const Vector& molality, double ln_aw);
 
   Matrix A;                ///< components x species

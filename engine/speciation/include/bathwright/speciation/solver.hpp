@@ -60,6 +60,7 @@ struct Equilibrium {
   std::vector<double> gas_bar;           ///< per gas: partial pressure over the solution
   std::vector<double> gas_mol;           ///< per held gas: taken up (negative: given off)
   double held_ph_mol = 0;                ///< H^+ added to hold the pH, with its counter-ion
+  bool stable = true;                    ///< the Gibbs energy curves upward: no other solution nearby
   int iterations = 0;
   Residuals residuals;
 
@@ -75,8 +76,8 @@ class Solver {
 
   /// Converges to: relative mass balance 1e-12, ln mass action 1e-10, ln saturation 1e-9, as verified. Fails,
   /// never with a silent wrong answer, on: a total that is not finite or negative, water not positive
-  /// (bad_input); a pH or gas pressure that cannot be held with what was given (out_of_range); no convergence
-  /// (not_converged, with the numbers).
+  /// (bad_input); a pH or gas pressure that cannot be held with what was given, a solution that dries up or
+  /// that the model cannot follow (out_of_range); no convergence (not_converged, with the numbers).
   Result<Equilibrium> solve(const Task& task) const;
 
   [[nodiscard]] const ChemicalSystem& system() const { return *system_; }
