@@ -1,0 +1,103 @@
+#include <bathwright/shopfiles/readings_file.hpp>
+#include <bathwright/units/read.hpp>
+
+#include "ranges.hpp"
+#include "schema.hpp"
+
+namespace bathwright::shopfiles {
+namespace {
+
+using analysis::Found;
+using analysis::Readings;
+using analysis::Titration;
+
+/// ISO 8601 of a date and time in quotes, with or without seconds: what TOML itself would take without
+/// quotes.
+std::string local_date_time(std::string text) {
+  constexpr std::size_t without_seconds = std::string_view("2026-03-02T05:40").size();
+  if (text.size() == without_seconds) text += ":00";
+  const auto tree = parse_toml("", "sampled = " + text);
+  return tree && tree->items[0].kind == Node::Kind::moment ? tree->items[0].text : "";
+}
+
+std::string read_sampled(Table& root) {
+  constexpr std::string_view example = "2026-03-02T05:40:00";
+  const Node* written = root.any({"sampled", optional, example});
+  if (!written) return "";
+  std::string moment = written->kind == Node::Kind::text ? local_date_time(written->text) : written->text;
+  if (written->kind == Node::Kind::number || moment.empty()) {
+    root.report("sampled", "is not a local date and time",
+                "year-month-dayThour:minute:second, as " + std::string(example), "Leave the time zone out.");
+  }
+  return moment;
+}
+
+Titration read_titration(Table& entry) {
+  Titration t;
+  t.where = entry.where("quantity");
+  t.quantity = entry.text({"quantity", required, R"("Ni^2+")"});
+  t.method = entry.text({"method", required, R"("edta-nickel")"});
+  t.sample =
+      entry.positive({"sample", required, R"("2.00 mL")"}, units::read_volume).value_or(units::Litres{});
+  t.titrant = entry.positive({"titrant", required, R"("0.1012 mol/L")"}, units::read_molarity)
+                  .value_or(units::MolesPerLitre{});
+  t.factor = entry.number({"factor", optional, "1.003"}, possible_factor).value_or(1);
+  t.burette =
+      entry.quantity({"burette", required, R"("23.80 mL")"}, units::read_volume).value_or(units::Litres{});
+  const auto blank = entry.quantity({"blank", optional, R"("0.05 mL")"}, units::read_volume);
+  t.blank = blank.value_or(units::Litres{});
+  if (t.blank > t.burette) {
+    entry.report("blank", "is more than the burette reading", "the titrant used without a sample",
+                 "Are the two readings interchanged?");
+  }
+  return t;
+}
+
+Found read_found(Table& entry) {
+  Found found;
+  found.where = entry.where("quantity");
+  found.quantity = entry.text({"quantity", required, R"("Cl^-")"});
+  found.value = entry.quantity({"value", required, R"("14.3 g/L")"}, units::read_concentration)
+                    .value_or(units::Concentration{});
+  found.uncertainty = entry.quantity({"uncertainty", optional, R"("0.2 g/L")"}, units::read_concentration);
+  return found;
+}
+
+void read_level(Table& root, Readings& readings) {
+  readings.volume = root.positive({"volume", optional, R"("2340 L")"}, units::read_volume);
+  readings.level_below_mark = root.quantity({"level_below_mark", optional, R"("3 cm")"}, units::read_length);
+  if (root.has("volume") && root.has("level_below_mark")) {
+    root.report("level_below_mark", "stands beside a volume", "the volume or the level",
+                "Remove one of them.");
+  }
+}
+
+}  // namespace
+
+Result<Readings> read_readings_text(std::string_view name, std::string_view text) {
+  auto tree = parse_toml(name, text);
+  if (!tree) return tree.problems();
+  Document file(name, *std::move(tree));
+  Table root = file.root();
+  Readings readings;
+  readings.file = name;
+  readings.sampled = read_sampled(root);
+  read_level(root, readings);
+  readings.temperature = root.quantity({"temperature", optional, R"("54 degC")"}, units::read_temperature);
+  readings.pH = root.number({"pH", optional, "4.1"}, possible_pH);
+  readings.density = root.positive({"density", optional, R"("28 degBe")"}, units::read_density);
+  for (Table& entry : root.tables({"titration", optional, "[[titration]]"})) {
+    readings.titrations.push_back(read_titration(entry));
+  }
+  for (Table& entry : root.tables({"found", optional, "[[found]]"}))
+    readings.found.push_back(read_found(entry));
+  return file.conclude(std::move(readings));
+}
+
+Result<Readings> read_readings(const std::string& path) {
+  const auto text = read_text_file(path);
+  if (!text) return text.problems();
+  return read_readings_text(path, *text);
+}
+
+}  // namespace bathwright::shopfiles

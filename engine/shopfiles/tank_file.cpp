@@ -1,0 +1,124 @@
+#include <algorithm>
+#include <bathwright/matter/concentration.hpp>
+#include <bathwright/matter/formula.hpp>
+#include <bathwright/shopfiles/tank_file.hpp>
+#include <bathwright/units/read.hpp>
+
+#include "ranges.hpp"
+#include "schema.hpp"
+#include "shelf.hpp"
+
+namespace bathwright::shopfiles {
+namespace {
+
+using bath::Aim;
+using bath::Tank;
+
+void read_vessel(Table& root, Tank& tank) {
+  auto vessel = root.table({"vessel", required, R"({ working_volume = "2400 L", freeboard = "150 L" })"});
+  if (!vessel) return;
+  const auto volume = vessel->positive({"working_volume", required, R"("2400 L")"}, units::read_volume);
+  const auto freeboard = vessel->quantity({"freeboard", required, R"("150 L")"}, units::read_volume);
+  tank.surface = vessel->positive({"surface", optional, R"("200 dm2")"}, units::read_area);
+  tank.working_volume = volume.value_or(units::Litres{});
+  tank.freeboard = freeboard.value_or(units::Litres{});
+}
+
+units::Celsius read_bath_temperature(Table& operating, const Key& key) {
+  const auto temperature = operating.quantity(key, units::read_temperature).value_or(units::Celsius{});
+  if (temperature.v < liquid_bath_C.low || temperature.v > liquid_bath_C.high) {
+    operating.report(key.name, "no bath is liquid at this temperature", "-10 to 110 degC", "Check the unit.");
+  }
+  return temperature;
+}
+
+void read_operating(Table& root, Tank& tank) {
+  auto operating =
+      root.table({"operating", required, R"({ temperature = "55 degC", idle_temperature = "18 degC" })"});
+  if (!operating) return;
+  tank.temperature = read_bath_temperature(*operating, {"temperature", required, R"("55 degC")"});
+  tank.idle_temperature = read_bath_temperature(*operating, {"idle_temperature", required, R"("18 degC")"});
+}
+
+std::optional<double> pH_of(Table& target, const Key& key, const std::string&) {
+  return target.number(key, possible_pH);
+}
+
+/// g/L of `quantity`, whose formula is looked at only where the unit needs its molar mass.
+std::optional<double> grams_per_litre_of(Table& target, const Key& key, const std::string& quantity) {
+  const auto written = target.quantity(key, units::read_concentration);
+  if (!written) return std::nullopt;
+  matter::ConcentrationBasis basis;
+  if (units::moles_per_litre_if_direct(*written)) {
+    const auto formula = matter::Formula::parse(quantity, target.where(key.name));
+    if (!formula) {
+      target.report(key.name, formula.problems());
+      return std::nullopt;
+    }
+    basis.molar_mass = formula->molar_mass();
+  }
+  const auto grams = matter::grams_per_litre(*written, basis, target.where(key.name));
+  if (grams) return grams->v;
+  target.report(key.name, grams.problems());
+  return std::nullopt;
+}
+
+std::optional<Aim> read_aim(Table& target, const std::string& quantity) {
+  const bool is_pH = quantity == "pH";
+  auto entry = target.table({quantity, required,
+                             is_pH ? "{ aim = 4.2, low = 3.8, high = 4.6 }"
+                                   : R"({ aim = "42 g/L", low = "38 g/L", high = "45 g/L" })"});
+  if (!entry) return std::nullopt;
+  const auto read = is_pH ? pH_of : grams_per_litre_of;
+  const auto aim = read(*entry, {"aim", required, is_pH ? "4.2" : R"("42 g/L")"}, quantity);
+  const auto low = read(*entry, {"low", required, is_pH ? "3.8" : R"("38 g/L")"}, quantity);
+  const auto high = read(*entry, {"high", required, is_pH ? "4.6" : R"("45 g/L")"}, quantity);
+  if (!aim || !low || !high) return std::nullopt;
+  if (!(*low <= *aim && *aim <= *high)) {
+    target.report(quantity, "the aim is not inside its window", "low <= aim <= high");
+  } else if (*low == *high) {
+    target.report(quantity, "the window has no width", "low < high");
+  }
+  return Aim{quantity, *aim, *low, *high};
+}
+
+void read_targets(Table& root, Tank& tank) {
+  auto target =
+      root.table({"target", required, R"(a table of quantities, as "Ni^2+" = { aim = "75 g/L", ... })"});
+  if (!target) return;
+  for (const std::string& quantity : target->names()) {
+    if (auto aim = read_aim(*target, quantity)) tank.aims.push_back(*std::move(aim));
+  }
+  if (target->names().empty()) root.report("target", "names no quantity", "at least one quantity to hold");
+}
+
+}  // namespace
+
+Result<Tank> read_tank_text(std::string_view name, std::string_view text,
+                            const matter::StockCatalogue& catalogue) {
+  auto tree = parse_toml(name, text);
+  if (!tree) return tree.problems();
+  Document file(name, *std::move(tree));
+  Table root = file.root();
+  Tank tank;
+  tank.file = name;
+  tank.bath_type = root.text({"bath_type", required, R"("watts-nickel")"});
+  tank.name = root.text({"name", required, R"("N-07 bright nickel")"});
+  tank.shop = root.text({"shop", optional, R"("Brindlewick Surface Works")"});
+  tank.currency = root.text({"currency", optional, R"("EUR")"});
+  read_vessel(root, tank);
+  read_operating(root, tank);
+  read_targets(root, tank);
+  if (auto shelf = root.table({"shelf", optional, R"({ boric-acid = { price = 1.90, unit = "kg" } })"})) {
+    tank.shelf = read_shelf(*shelf, catalogue);
+  }
+  return file.conclude(std::move(tank));
+}
+
+Result<Tank> read_tank(const std::string& path, const matter::StockCatalogue& catalogue) {
+  const auto text = read_text_file(path);
+  if (!text) return text.problems();
+  return read_tank_text(path, *text, catalogue);
+}
+
+}  // namespace bathwright::shopfiles

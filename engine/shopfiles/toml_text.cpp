@@ -1,0 +1,166 @@
+#include "toml_text.hpp"
+
+#include <fmt/format.h>
+#include <toml++/toml.h>
+
+#include <algorithm>
+#include <cerrno>
+#include <cstring>
+#include <filesystem>
+#include <fstream>
+#include <iterator>
+
+namespace bathwright::shopfiles {
+namespace {
+
+// The TOML library frees a tree by recursion, one step a level, and a tree cannot be deeper than the text has
+// dots and opening brackets. So many steps fit any stack; a shop file has a few hundred.
+constexpr std::ptrdiff_t most_dots_and_brackets = 4000;
+
+bool is_control(char c) { return (c >= 0 && c < 0x20) || c == 0x7f; }
+
+int line_of(std::string_view text, std::size_t position) {
+  return 1 + static_cast<int>(
+                 std::count(text.begin(), text.begin() + static_cast<std::ptrdiff_t>(position), '\n'));
+}
+
+// What would be a nuisance or a danger to parse.
+std::optional<Problem> unfit(std::string_view name, std::string_view text) {
+  const std::string whole{name};
+  if (text.size() > longest_file_bytes) {
+    return Problem{Fault::bad_input, whole, "is larger than 1 MiB", "a shop file of a few kilobytes", ""};
+  }
+  if (const auto zero = text.find('\0'); zero != text.npos) {
+    return Problem{Fault::bad_input, at_line(name, line_of(text, zero)),
+                   "a zero byte: this is not a text file", "a text file in UTF-8",
+                   "Save it as plain text, UTF-8."};
+  }
+  if (std::ranges::count_if(text, [](char c) { return c == '.' || c == '[' || c == '{'; }) >
+      most_dots_and_brackets) {
+    return Problem{Fault::bad_input, whole,
+                   fmt::format("more than {} dots and brackets", most_dots_and_brackets),
+                   "a shop file, nested three levels at most", ""};
+  }
+  return std::nullopt;
+}
+
+// Two digits a field: "2026-03-02T05:40:00".
+std::string iso_8601(const toml::date_time& moment) {
+  return fmt::format("{:04}-{:02}-{:02}T{:02}:{:02}:{:02}", moment.date.year, moment.date.month,
+                     moment.date.day, moment.time.hour, moment.time.minute, moment.time.second);
+}
+
+class Converter {
+ public:
+  explicit Converter(std::string_view name) : name_(name) {}
+
+  Node convert(const toml::node& from, std::string key, int line, int depth) {
+    Node node;
+    node.line = line;
+    node.key = std::move(key);
+    if (node.key.size() > longest_key_bytes)
+      refuse(node, "is too long a key", "a key of up to 100 characters");
+    if (depth > deepest_nesting) {
+      refuse(node, "is nested too deep", "no table or list within the fourth");
+      return node;
+    }
+    if (const auto* table = from.as_table()) {
+      for (const auto& [name, item] : *table) {
+        node.items.push_back(
+            convert(item, std::string(name.str()), static_cast<int>(name.source().begin.line), depth + 1));
+      }
+      std::ranges::stable_sort(node.items, {}, &Node::line);
+    } else if (const auto* list = from.as_array()) {
+      node.kind = Node::Kind::list;
+      for (const auto& item : *list) {
+        node.items.push_back(convert(item, "", static_cast<int>(item.source().begin.line), depth + 1));
+      }
+    } else {
+      set_value(node, from);
+    }
+    return node;
+  }
+
+  Problems problems;
+
+ private:
+  void set_value(Node& node, const toml::node& from) {
+    if (const auto* text = from.as_string()) {
+      node.kind = Node::Kind::text;
+      node.text = text->get();
+      if (node.text.size() > longest_text_bytes) refuse(node, "is too long a text", "up to 1000 characters");
+      if (std::ranges::any_of(node.text, is_control))
+        refuse(node, "holds control characters", "text on one line");
+    } else if (from.is_number()) {
+      node.kind = Node::Kind::number;
+      node.number =
+          from.is_integer() ? static_cast<double>(from.as_integer()->get()) : from.as_floating_point()->get();
+    } else if (from.is_boolean()) {
+      node.kind = Node::Kind::truth;
+    } else {
+      node.kind = Node::Kind::moment;
+      const auto* moment = from.as_date_time();
+      if (moment && !moment->get().offset) node.text = iso_8601(moment->get());
+    }
+  }
+
+  void refuse(const Node& node, std::string what, std::string expected) {
+    problems.push_back({Fault::bad_input, at_line(name_, node.line),
+                        (node.key.empty() ? "an item" : printable(node.key)) + ' ' + std::move(what),
+                        std::move(expected), ""});
+  }
+
+  std::string_view name_;
+};
+
+}  // namespace
+
+std::string at_line(std::string_view name, int line) { return fmt::format("{}:{}", name, line); }
+
+std::string printable(std::string_view text) {
+  constexpr std::size_t longest = 60;  // a message is one line
+  std::size_t end = std::min(text.size(), longest);
+  while (end < text.size() && (static_cast<unsigned char>(text[end]) & 0xC0) == 0x80)
+    --end;  // whole letters only
+  std::string shown(text.substr(0, end));
+  std::ranges::replace_if(shown, is_control, '?');
+  return end < text.size() ? shown + "..." : shown;
+}
+
+Result<std::string> read_text_file(const std::string& path) {
+  std::error_code ignored;
+  if (std::filesystem::is_directory(path, ignored)) {
+    return Problem{Fault::io, path, "is a folder", "a file", "Name the file in it."};
+  }
+  std::ifstream file(path, std::ios::binary);
+  if (!file) {
+    return Problem{Fault::io, path, std::string("cannot be opened: ") + std::strerror(errno),
+                   "a file to read", "Check the path."};
+  }
+  std::string text(longest_file_bytes + 1, '\0');
+  file.read(text.data(), static_cast<std::streamsize>(text.size()));
+  if (file.bad()) return Problem{Fault::io, path, "cannot be read to its end", "", ""};
+  text.resize(static_cast<std::size_t>(file.gcount()));
+  return text;
+}
+
+Result<Node> parse_toml(std::string_view name, std::string_view text) {
+  if (const auto problem = unfit(name, text)) return *problem;
+  try {
+    const toml::table root = toml::parse(text, name);
+    if (root.empty()) {
+      return Problem{Fault::bad_input, at_line(name, 1), "holds no key at all",
+                     "keys as baths/README.md lists them", ""};
+    }
+    Converter converter(name);
+    Node tree = converter.convert(root, "", 1, 0);
+    if (!converter.problems.empty()) return converter.problems;
+    return tree;
+  } catch (const toml::parse_error& error) {
+    return Problem{Fault::bad_input, at_line(name, static_cast<int>(error.source().begin.line)),
+                   "cannot be read as TOML: " + std::string(error.description()), "",
+                   "Texts stand in quotes; numbers have a decimal point and no unit."};
+  }
+}
+
+}  // namespace bathwright::shopfiles
