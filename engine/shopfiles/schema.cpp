@@ -4,7 +4,6 @@
 
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
-#include <bathwright/units/show.hpp>
 
 namespace bathwright::shopfiles {
 namespace {
@@ -14,7 +13,7 @@ std::string shown(const Node& node) {
     case Node::Kind::text:
       return '"' + printable(node.text) + '"';
     case Node::Kind::number:
-      return units::significant(node.number, 6);
+      return fmt::format("{}", node.number);
     case Node::Kind::truth:
       return "true or false";
     case Node::Kind::moment:
@@ -109,8 +108,7 @@ std::optional<double> Table::number(const Key& key, Range range) {
   if (!item) return std::nullopt;
   if (item->number >= range.low && item->number <= range.high) return item->number;
   report(key.name, shown(*item) + " is out of range",
-         fmt::format("a number from {} to {}, as {}", units::significant(range.low),
-                     units::significant(range.high), key.example),
+         fmt::format("a number from {} to {}, as {}", range.low, range.high, key.example),
          "Check the decimal point.");
   return std::nullopt;
 }

@@ -1,0 +1,66 @@
+#include <bathwright/shopfiles/readings_file.hpp>
+#include <catch2/catch.hpp>
+#include <string>
+
+using namespace bathwright;
+using analysis::Readings;
+
+namespace {
+Readings readings_of(const std::string& written) {
+  const auto readings = shopfiles::read_readings_text("r.toml", written);
+  INFO((readings ? "" : text(readings.problems())));
+  REQUIRE(readings);
+  return *readings;
+}
+}  // namespace
+
+TEST_CASE("the demonstration readings are read as they stand", "[unit][shopfiles]") {
+  const auto readings = shopfiles::read_readings(PROJECT_DIR "/baths/readings/n-07-morning.toml");
+  INFO((readings ? "" : text(readings.problems())));
+  REQUIRE(readings);
+  CHECK(readings->sampled == "2026-03-02T05:40:00");
+  CHECK(readings->level_below_mark->v == Approx(0.3).epsilon(1e-15));
+  CHECK_FALSE(readings->volume);
+  CHECK(readings->temperature->v == 54);
+  CHECK(readings->pH == 4.1);
+  struct Row {
+    std::string quantity, method;
+    double titrant_mol_per_L, burette_mL;
+  };
+  const std::vector<Row> rows = {{"Ni^2+", "edta-nickel", 0.1012, 23.80},
+                                 {"Cl^-", "mohr-chloride", 0.0998, 8.10},
+                                 {"H3BO3", "mannitol-boric-acid", 0.1005, 11.90}};
+  REQUIRE(readings->titrations.size() == rows.size());
+  for (std::size_t i = 0; i < rows.size(); ++i) {
+    const auto& t = readings->titrations[i];
+    INFO(rows[i].quantity);
+    CHECK(t.quantity == rows[i].quantity);
+    CHECK(t.method == rows[i].method);
+    CHECK(t.sample.v == Approx(0.002).epsilon(1e-12));
+    CHECK(t.titrant.v == Approx(rows[i].titrant_mol_per_L).epsilon(1e-12));
+    CHECK(t.burette.v == Approx(rows[i].burette_mL / 1000).epsilon(1e-12));
+    CHECK(t.factor == 1);
+    CHECK(t.blank.v == 0);
+  }
+  CHECK(readings->titrations[1].where.ends_with("n-07-morning.toml:15: titration.quantity"));
+}
+
+TEST_CASE("a concentration found elsewhere keeps the unit it was written in", "[unit][shopfiles]") {
+  const Readings readings = readings_of(
+      "density = \"25 degBe\"\nvolume = \"600 US gal\"\n"
+      "[[found]]\nquantity = \"Cl^-\"\nvalue = \"1,9 oz/US gal\"\nuncertainty = \"0.2 g/L\"\n");
+  REQUIRE(readings.found.size() == 1);
+  CHECK(readings.found[0].value.value == 1.9);
+  CHECK(readings.found[0].value.unit == units::ConcentrationUnit::ounces_per_us_gallon);
+  CHECK(readings.found[0].uncertainty->value == 0.2);
+  CHECK(readings.found[0].where == "r.toml:4: found.quantity");
+  CHECK(readings.density->v == Approx(145.0 / (145 - 25) * 0.99904).epsilon(1e-12));  // heavy Baume scale
+  CHECK(readings.volume->v == Approx(600 * 3.785411784).epsilon(1e-12));
+}
+
+TEST_CASE("the sampling time may stand in quotes, with or without seconds", "[unit][shopfiles]") {
+  for (const char* written : {"2026-03-02T05:40:00", "\"2026-03-02T05:40:00\"", "\"2026-03-02 05:40\""}) {
+    INFO(written);
+    CHECK(readings_of("sampled = " + std::string(written)).sampled == "2026-03-02T05:40:00");
+  }
+}
