@@ -47,6 +47,7 @@ class Workspace {
   Matrix A;                ///< components x species
   Vector water;            ///< H2O per species
   Vector ln_K;             ///< per species
+  Vector charge;           ///< per species
   Vector total;            ///< per component, mol
   double total_water = 0;  ///< mol
   std::vector<Phase> phases;
