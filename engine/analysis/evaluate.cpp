@@ -1,0 +1,319 @@
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <bathwright/analysis/analysis.hpp>
+#include <bathwright/matter/water.hpp>
+#include <bathwright/units/show.hpp>
+#include <cassert>
+#include <cmath>
+
+#include "findings.hpp"
+#include "levels.hpp"
+#include "sanity.hpp"
+#include "uncertainty_terms.hpp"
+
+namespace bathwright::analysis {
+namespace {
+
+using units::show;
+
+// One evaluation at work: what is known so far, and every problem met on the way.
+class Evaluation {
+ public:
+  Evaluation(const Readings& readings, const bath::Tank& tank, const bath::Chemistry& chemistry,
+             const std::optional<Book>& book)
+      : readings_(readings), tank_(tank), chemistry_(chemistry), type_(chemistry.type()), book_(book) {}
+
+  Result<Analysis> run() {
+    find_volume();
+    find_temperature();
+    find_pH();
+    take_findings();
+    if (!problems_.empty()) return problems_;
+    list_levels();
+    std::ranges::copy(misfits(analysis_, tank_), std::back_inserter(analysis_.suspects));
+    close_with_state();
+    if (!problems_.empty()) return problems_;
+    compare_what_was_not_used();
+    compare_density();
+    return std::move(analysis_);
+  }
+
+ private:
+  void refuse(std::string field, std::string what, std::string expected, std::string mend) {
+    const std::string where = readings_.file.empty() ? std::move(field) : readings_.file + ": " + field;
+    problems_.push_back({Fault::bad_input, where, std::move(what), std::move(expected), std::move(mend)});
+  }
+  void note(std::string text) { analysis_.notes.push_back(std::move(text)); }
+
+  void find_volume();
+  void find_temperature();
+  void find_pH();
+  void take_findings();
+  void take_from_book(const bath::Component& component);
+  void take_all_that_settle();
+  void list_levels();
+  void close_with_state();
+  void compare_what_was_not_used();
+  void compare_density();
+
+  [[nodiscard]] const std::string& counter_ion() const;
+  void add_result(const bath::Quantity& quantity);
+
+  const Readings& readings_;
+  const bath::Tank& tank_;
+  const bath::Chemistry& chemistry_;
+  const bath::BathType& type_;
+  const std::optional<Book>& book_;
+
+  Analysis analysis_;
+  Problems problems_;
+  Levels levels_;
+  std::vector<Finding> open_, used_, unused_;
+};
+
+void Evaluation::find_volume() {
+  if (readings_.volume && readings_.level_below_mark) {
+    refuse("volume", "both a volume and a level below the mark are given", "one of them", "Leave one out.");
+  } else if (readings_.volume) {
+    analysis_.volume = *readings_.volume;
+    analysis_.volume_from = "as read";
+  } else if (readings_.level_below_mark) {
+    if (!tank_.surface) {
+      refuse("level_below_mark", tank_.name + " has no surface area to turn a level into a volume", "",
+             "Give the volume, or the liquid surface in the tank file.");
+      return;
+    }
+    analysis_.volume = {tank_.working_volume.v -
+                        readings_.level_below_mark->v * tank_.surface->v};  // dm * dm2 = L
+    analysis_.volume_from = fmt::format("{} at the mark, {} low on {}", show(tank_.working_volume),
+                                        show(*readings_.level_below_mark), show(*tank_.surface));
+  } else {
+    analysis_.volume = tank_.working_volume;
+    analysis_.volume_from = "taken as the working volume";
+    note("no volume or level given: the tank is taken as filled to the mark, " + show(tank_.working_volume));
+  }
+  if (problems_.empty() && (!(analysis_.volume.v > 0) || !std::isfinite(analysis_.volume.v)))
+    refuse(readings_.level_below_mark ? "level_below_mark" : "volume",
+           "leaves " + show(analysis_.volume) + " in the tank", "more than 0",
+           "Check the figure and its unit.");
+}
+
+void Evaluation::find_temperature() {
+  analysis_.temperature = readings_.temperature.value_or(tank_.temperature);
+  if (!readings_.temperature) note("no temperature given: taken as the tank's, " + show(tank_.temperature));
+
+  constexpr units::Celsius laboratory{20};
+  const double expansion = matter::water_density(laboratory) / matter::water_density(analysis_.temperature);
+  if (std::abs(expansion - 1) > 0.001) {
+    note(
+        fmt::format("levels are taken to hold at {}; of a sample that was pipetted at {} they are {:.1f} % "
+                    "too {} (expansion of water)",
+                    show(analysis_.temperature), show(laboratory), 100 * std::abs(expansion - 1),
+                    expansion > 1 ? "high" : "low"));
+  }
+}
+
+void Evaluation::find_pH() {
+  if (readings_.pH) {
+    analysis_.pH = *readings_.pH;
+  } else if (book_ && book_->pH) {
+    analysis_.pH = *book_->pH;
+    note(fmt::format("no pH given: {} taken from {}", units::significant(analysis_.pH), book_->from));
+  } else {
+    refuse("pH", "no pH is given and the book has none", "", "Measure the pH and enter it.");
+    return;
+  }
+  if (!std::isfinite(analysis_.pH))
+    refuse("pH", "is not a number", "0 to 14", "Enter the pH as it was read.");
+}
+
+const std::string& Evaluation::counter_ion() const {
+  const auto found = std::ranges::find(type_.components, bath::FoundBy::charge, &bath::Component::found_by);
+  assert(found != type_.components.end());  // Chemistry::prepare asks for one
+  return found->species;
+}
+
+// Findings that settle a component are taken, again and again, until the rest settles nothing more.
+void Evaluation::take_all_that_settle() {
+  for (bool progress = true; progress;) {
+    progress = false;
+    std::erase_if(open_, [&](const Finding& finding) {
+      const Levels::Taken taken = levels_.take(finding);
+      if (taken == Levels::Taken::leaves_open) return false;
+      progress |= taken == Levels::Taken::settles_a_component;
+      (taken == Levels::Taken::restates ? unused_ : used_).push_back(finding);
+      return true;
+    });
+  }
+}
+
+void Evaluation::take_findings() {
+  auto findings = findings_of(readings_, type_);
+  if (!findings) {
+    problems_.insert(problems_.end(), findings.problems().begin(), findings.problems().end());
+    return;
+  }
+  std::ranges::copy(findings->notes, std::back_inserter(analysis_.notes));
+  open_ = united(findings->all, analysis_.suspects);
+
+  // The counter-ion is what electroneutrality leaves; a finding of it can only be compared.
+  const std::string& counter = counter_ion();
+  const auto counted = std::stable_partition(
+      open_.begin(), open_.end(), [&](const Finding& f) { return !f.quantity->counts.contains(counter); });
+  unused_.assign(counted, open_.end());
+  open_.erase(counted, open_.end());
+
+  // An ion found for itself comes before a salt that restates it.
+  std::ranges::stable_sort(open_, {}, [](const Finding& f) {
+    return std::pair(f.quantity->counts.size(), f.quantity->salt_view);
+  });
+  take_all_that_settle();
+
+  // A salt found is about its most counted component (NiSO4.6H2O about Ni^2+): the book completes the others
+  // first.
+  const auto is_about = [](const Finding& finding, const std::string& species) {
+    const auto largest = std::ranges::max_element(finding.quantity->counts, {},
+                                                  [](const auto& part) { return std::abs(part.second); });
+    return largest->first == species;
+  };
+  std::vector<bath::Component> missing;
+  std::ranges::copy_if(type_.components, std::back_inserter(missing), [](const bath::Component& c) {
+    return c.found_by == bath::FoundBy::analysis || c.found_by == bath::FoundBy::book;
+  });
+  std::ranges::stable_partition(missing, [&](const bath::Component& c) {
+    return std::ranges::none_of(open_, [&](const Finding& f) { return is_about(f, c.species); });
+  });
+  for (const bath::Component& component : missing) {
+    if (!levels_.knows(component.species)) take_from_book(component);
+    take_all_that_settle();
+  }
+}
+
+void Evaluation::take_from_book(const bath::Component& component) {
+  const auto own = std::ranges::find_if(type_.quantities, [&](const bath::Quantity& q) {
+    return !q.salt_view && q.counts.size() == 1 && q.counts.contains(component.species);
+  });
+  const bool has_quantity = own != type_.quantities.end();
+  const std::string& called = has_quantity ? own->id : component.species;
+  if (has_quantity && book_ && book_->g_per_L.contains(called)) {
+    const double level = book_->g_per_L.at(called);
+    if (!(level >= 0) || !std::isfinite(level)) {
+      refuse(called, fmt::format("{} has {} g/L", book_->from, units::significant(level)), "0 or more",
+             "Analyse it and enter the result.");
+      return;
+    }
+    const double relative = uncertainty_term("book");
+    open_.push_back({&*own, level, relative * level, Origin::book, book_->from, book_->from});
+    note(fmt::format("{} was not analysed: {} taken from {}, with {:g} % uncertainty (common practice)",
+                     called, show(units::GramsPerLitre{level}), book_->from, 100 * relative));
+  } else if (component.found_by == bath::FoundBy::book) {
+    levels_.take_none_of(component.species);
+    note(fmt::format("{} was not analysed and the book has none: taken as 0", called));
+  } else {
+    const auto titrations = methods_for(called);
+    refuse(called, "no level is given and the book has none", "",
+           titrations.empty() ? "State it as a concentration found."
+                              : fmt::format("Titrate it ({}), or state it as a concentration found.",
+                                            fmt::join(titrations, ", ")));
+  }
+}
+
+std::string made_of(const bath::Quantity& quantity) {
+  std::string text;
+  for (const auto& [species, coefficient] : quantity.counts) {
+    const double size = std::abs(coefficient);
+    text += text.empty() ? (coefficient < 0 ? "-" : "") : (coefficient < 0 ? " - " : " + ");
+    text += size == 1 ? species : fmt::format("{:g} {}", size, species);
+  }
+  return "mol: " + text;
+}
+
+void Evaluation::add_result(const bath::Quantity& quantity) {
+  const auto level = levels_.of(quantity.counts);
+  if (!level) return;
+  const double molar_mass = quantity.formula.molar_mass().v;
+  const auto direct = std::ranges::find(used_, &quantity, &Finding::quantity);
+  std::string how = direct != used_.end() ? direct->how : made_of(quantity);
+  if (level->from == Origin::electroneutrality) how = "what balances the charges at this pH";
+  analysis_.results.push_back({quantity.id,
+                               {level->mol_per_L * molar_mass},
+                               {level->u_mol_per_L * molar_mass},
+                               level->from,
+                               std::move(how)});
+}
+
+void Evaluation::list_levels() {
+  for (const bool salt_views : {false, true}) {
+    for (const bath::Quantity& quantity : type_.quantities) {
+      if (quantity.salt_view == salt_views) add_result(quantity);
+    }
+  }
+}
+
+void Evaluation::close_with_state() {
+  auto state = chemistry_.state_from(levels_.in_use(), analysis_.pH, analysis_.volume, analysis_.temperature);
+  if (!state) {
+    problems_ = state.problems();
+    for (const Suspect& s : analysis_.suspects) refuse(s.what, s.reason, "", s.try_this);
+    return;
+  }
+  analysis_.state = *std::move(state);
+  const std::string& counter = counter_ion();
+  const auto& components = chemistry_.components();
+  const auto index = static_cast<std::size_t>(std::ranges::find(components, counter) - components.begin());
+  levels_.close_charge(counter, analysis_.state.component_mol[index] / analysis_.volume.v);
+  for (const bath::Quantity& quantity : type_.quantities) {
+    if (quantity.counts.contains(counter)) add_result(quantity);
+  }
+}
+
+void Evaluation::compare_what_was_not_used() {
+  for (const Finding& finding : unused_) {
+    const auto level = levels_.of(finding.quantity->counts);
+    if (!level) continue;
+    const double molar_mass = finding.quantity->formula.molar_mass().v;
+    const units::GramsPerLitre found{finding.g_per_L}, follows{level->mol_per_L * molar_mass};
+    if (disagree(found.v, finding.u_g_per_L, follows.v, level->u_mol_per_L * molar_mass)) {
+      analysis_.suspects.push_back(
+          {finding.quantity->id,
+           fmt::format(
+               "{} found, but {} follow from the other levels, more than 3 standard uncertainties apart; "
+               "the finding was not used",
+               show(found), show(follows)),
+           "Titrate both again."});
+    } else {
+      note(fmt::format("{} found as {} agrees with the {} that follow from the other levels; it was not used",
+                       finding.quantity->id, show(found), show(follows)));
+    }
+  }
+}
+
+void Evaluation::compare_density() {
+  analysis_.density_predicted = chemistry_.density(analysis_.state);
+  analysis_.density_measured = readings_.density;
+  std::ranges::copy(density_misfit(analysis_), std::back_inserter(analysis_.suspects));
+}
+
+}  // namespace
+
+std::string_view name(Origin origin) {
+  switch (origin) {
+    case Origin::titration:
+      return "titration";
+    case Origin::found:
+      return "found";
+    case Origin::book:
+      return "book";
+    case Origin::electroneutrality:
+      return "electroneutrality";
+  }
+  return "";
+}
+
+Result<Analysis> evaluate(const Readings& readings, const bath::Tank& tank, const bath::Chemistry& chemistry,
+                          const std::optional<Book>& book) {
+  return Evaluation(readings, tank, chemistry, book).run();
+}
+
+}  // namespace bathwright::analysis

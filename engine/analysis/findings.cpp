@@ -1,0 +1,168 @@
+#include "findings.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <bathwright/analysis/titration.hpp>
+#include <bathwright/base/nearest.hpp>
+#include <bathwright/matter/concentration.hpp>
+#include <bathwright/units/show.hpp>
+#include <cmath>
+
+#include "uncertainty_terms.hpp"
+
+namespace bathwright::analysis {
+namespace {
+
+using units::show;
+
+std::string did_you_mean(std::string_view word, const std::vector<std::string>& candidates) {
+  if (const auto close = nearest(word, candidates)) return fmt::format("Did you mean {}?", *close);
+  return fmt::format("Use one of: {}.", fmt::join(candidates, ", "));
+}
+
+// The quantity of this id, if a person can find it: what counts protons follows from the pH.
+Result<const bath::Quantity*> quantity_to_find(const bath::BathType& type, const std::string& id,
+                                               const std::string& where) {
+  const bath::Quantity* quantity = type.quantity(id);
+  if (!quantity) {
+    std::vector<std::string> ids;
+    for (const bath::Quantity& q : type.quantities) ids.push_back(q.id);
+    return Problem{Fault::bad_input, where, fmt::format("'{}' is not a quantity of {}", id, type.name), "",
+                   did_you_mean(id, ids)};
+  }
+  for (const bath::Component& component : type.components) {
+    if (component.found_by == bath::FoundBy::pH && quantity->counts.contains(component.species))
+      return Problem{Fault::bad_input, where, id + " follows from the pH in this bath type", "",
+                     "Leave it out and give the pH."};
+  }
+  return quantity;
+}
+
+Result<const Method*> method_that_finds(const bath::Quantity& quantity, const Titration& titration) {
+  const auto fitting = methods_for(quantity.id);
+  const std::string mend = fitting.empty()
+                               ? "No titration in the table finds it: state it as a concentration found."
+                               : fmt::format("Use {}.", fmt::join(fitting, " or "));
+  const Method* known = method(titration.method);
+  if (!known) {
+    std::vector<std::string> ids;
+    for (const Method& m : methods()) ids.push_back(m.id);
+    return Problem{Fault::bad_input, titration.where,
+                   fmt::format("there is no titration '{}'", titration.method), "",
+                   nearest(titration.method, ids) ? did_you_mean(titration.method, ids) : mend};
+  }
+  if (known->analyte != quantity.id)
+    return Problem{Fault::bad_input, titration.where,
+                   fmt::format("{} does not find {}", known->id, quantity.id),
+                   "a titration of " + quantity.id, mend};
+  return known;
+}
+
+Result<Finding> finding_of(const Titration& titration, const bath::BathType& type) {
+  const auto quantity = quantity_to_find(type, titration.quantity, titration.where);
+  if (!quantity) return quantity.problems();
+  const auto chosen = method_that_finds(**quantity, titration);
+  if (!chosen) return chosen.problems();
+  const auto result = work_out(titration, **chosen, (*quantity)->formula.molar_mass());
+  if (!result) return result.problems();
+  return Finding{*quantity,         result->value.v, result->standard_uncertainty.v,
+                 Origin::titration, result->how,     titration.where};
+}
+
+Result<Finding> finding_of(const Found& found, const bath::BathType& type,
+                           const std::optional<units::KilogramsPerLitre>& density,
+                           std::vector<std::string>& notes) {
+  const auto quantity = quantity_to_find(type, found.quantity, found.where);
+  if (!quantity) return quantity.problems();
+  const matter::ConcentrationBasis basis{.molar_mass = (*quantity)->formula.molar_mass(),
+                                         .solution_density = density};
+  const auto in_grams_per_litre = [&](const units::Concentration& c,
+                                      std::string_view what) -> Result<double> {
+    const auto converted = matter::grams_per_litre(c, basis, found.where);
+    if (!converted) return converted.problems();
+    if (!(converted->v >= 0) || !std::isfinite(converted->v))
+      return Problem{Fault::bad_input, found.where,
+                     fmt::format("{}: {} is {}", found.quantity, what, show(c)), "0 or more",
+                     "Enter it as it was reported."};
+    return converted->v;
+  };
+  const auto value = in_grams_per_litre(found.value, "the concentration");
+  if (!value) return value.problems();
+  Finding finding{*quantity, *value, 0, Origin::found, show(found.value) + " found", found.where};
+  if (found.uncertainty) {
+    const auto u = in_grams_per_litre(*found.uncertainty, "its uncertainty");
+    if (!u) return u.problems();
+    finding.u_g_per_L = *u;
+  } else {
+    const double relative = uncertainty_term("found");
+    finding.u_g_per_L = relative * *value;
+    notes.push_back(fmt::format("{} was found without an uncertainty: {:g} % taken (common practice)",
+                                found.quantity, 100 * relative));
+  }
+  return finding;
+}
+
+Finding mean_of(const std::vector<Finding>& same) {
+  const auto n = static_cast<double>(same.size());
+  Finding mean = same.front();
+  double sum = 0, sum_of_u2 = 0, sum_of_squares = 0;
+  std::vector<std::string_view> hows;
+  for (const Finding& f : same) {
+    sum += f.g_per_L;
+    sum_of_u2 += f.u_g_per_L * f.u_g_per_L;
+    mean.from = std::max(mean.from, f.from);
+    hows.push_back(f.how);
+  }
+  mean.g_per_L = sum / n;
+  for (const Finding& f : same) sum_of_squares += std::pow(f.g_per_L - mean.g_per_L, 2);
+  mean.u_g_per_L = std::sqrt(std::max(sum_of_u2 / n, sum_of_squares / (n - 1)));
+  mean.how = fmt::format("mean of {}: {}", same.size(), fmt::join(hows, "; "));
+  return mean;
+}
+
+}  // namespace
+
+bool disagree(double a, double u_a, double b, double u_b) {
+  return std::abs(a - b) > 3 * std::hypot(u_a, u_b);
+}
+
+Result<Findings> findings_of(const Readings& readings, const bath::BathType& type) {
+  Findings findings;
+  Problems problems;
+  const auto keep = [&](const Result<Finding>& finding) {
+    if (finding)
+      findings.all.push_back(*finding);
+    else
+      problems.insert(problems.end(), finding.problems().begin(), finding.problems().end());
+  };
+  for (const Titration& titration : readings.titrations) keep(finding_of(titration, type));
+  for (const Found& found : readings.found) keep(finding_of(found, type, readings.density, findings.notes));
+  if (!problems.empty()) return problems;
+  return findings;
+}
+
+std::vector<Finding> united(const std::vector<Finding>& findings, std::vector<Suspect>& suspects) {
+  std::map<std::string, std::vector<Finding>> by_quantity;
+  for (const Finding& f : findings) by_quantity[f.quantity->id].push_back(f);
+  std::vector<Finding> one_each;
+  for (const auto& [quantity, same] : by_quantity) {
+    if (same.size() == 1) {
+      one_each.push_back(same.front());
+      continue;
+    }
+    const auto [low, high] = std::ranges::minmax_element(same, {}, &Finding::g_per_L);
+    if (disagree(low->g_per_L, low->u_g_per_L, high->g_per_L, high->u_g_per_L)) {
+      suspects.push_back(
+          {quantity,
+           fmt::format(
+               "results from {} to {} differ by more than 3 standard uncertainties; their mean is used",
+               show(units::GramsPerLitre{low->g_per_L}), show(units::GramsPerLitre{high->g_per_L})),
+           "Titrate a third time and leave the wrong one out."});
+    }
+    one_each.push_back(mean_of(same));
+  }
+  return one_each;
+}
+
+}  // namespace bathwright::analysis

@@ -1,0 +1,20 @@
+// The uncertainties every result rests on: class A glass and the terms of common practice
+// (data/analysis/glassware.csv, uncertainty_terms.csv).
+#pragma once
+
+#include <optional>
+#include <string_view>
+
+namespace bathwright::analysis {
+
+/// Standard uncertainty, mL, of the volume from the smallest class A burette or pipette that holds
+/// `volume_mL`: tolerance/sqrt 6, a triangular distribution. Nothing where none in the table is large enough.
+[[nodiscard]] std::optional<double> u_burette_mL(double volume_mL);
+[[nodiscard]] std::optional<double> u_pipette_mL(double volume_mL);
+[[nodiscard]] double largest_burette_mL();
+[[nodiscard]] double largest_pipette_mL();
+
+/// A row of uncertainty_terms.csv, in its unit. Asserts that there is one.
+[[nodiscard]] double uncertainty_term(std::string_view id);
+
+}  // namespace bathwright::analysis
