@@ -335,8 +335,7 @@ Result<Equilibrium> Solver::solve(const Task& task) const {
     w.rebase(molalities(w), w.ln_aw);
     found = solve_coupled(w, iterations);
   }
-  if (!found)
-    return not_converged("the equilibrium did not converge in " + std::to_string(iterations) + " steps");
+  if (!found) return beyond_reach(w, task);
 
   Equilibrium answer = answer_from(w, *this, task, iterations);
   const Residuals& r = answer.residuals;
