@@ -5,13 +5,14 @@
  * R1 Only fixed-width integers, doubles and pointers cross. No C++ type, exception, longjmp, signal handler,
  *    thread, change of locale or of floating-point mode may cross.
  * R2 Top structs begin with their size, tables state the size of their rows; both grow at the end only. What
- *    one side does not know about reads as zero, and zero means "not given". Unknown codes are not an error.
- * R3 Text is UTF-8, ends in NUL, holds no control characters and at most 400 bytes (1000 where marked
- * [long]). [req] text is never NULL or empty; other text may be NULL. R4 The unit stands in the field's name
- * or comment. An unknown number is NaN, never 0. R5 Tables are constant, owned by the plugin, valid until the
- * process ends; the host copies them while loading and keeps only the functions. Neither side frees the
- * other's memory. A library is never unloaded. R6 A number taken from somewhere says from where: `source` is
- * the 1-based row of `sources`; 0 is refused.
+ *    one side does not know about reads as zero, and zero means "not given". An unknown role, quality or flag
+ *    is not an error.
+ * R3 Text is UTF-8, ends in NUL, holds no control characters and at most 400 bytes, 1000 where marked long.
+ *    Text marked req is never NULL or empty; other text may be NULL.
+ * R4 The unit stands in the field's name or comment. An unknown number is NaN, never 0.
+ * R5 Tables are constant, owned by the plugin, valid until the process ends; the host copies them while
+ *    loading and keeps only the functions. Neither side frees the other's memory. No library is unloaded.
+ * R6 A number taken from somewhere says from where: `source` is the 1-based row of `sources`; 0 is refused.
  *
  * Call order and threads
  *   [load] once, on one thread, before any other call.
