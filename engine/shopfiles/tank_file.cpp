@@ -1,4 +1,3 @@
-#include <algorithm>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/matter/formula.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
