@@ -1,0 +1,65 @@
+#include "watts_sweep.hpp"
+
+#include <algorithm>
+#include <chrono>
+#include <random>
+#include <sstream>
+
+#include "systems.hpp"
+
+namespace bathwright::speciation {
+namespace {
+
+std::string description(const Solver& solver, const Task& task, unsigned seed, int number) {
+  std::ostringstream text;
+  text << "seed " << seed << ", case " << number << ", " << solver.temperature().v << " degC, precipitation "
+       << (task.solids.empty() ? "off" : "on") << ":";
+  text.precision(17);
+  for (std::size_t i = 0; i < task.component_mol.size(); ++i)
+    text << " " << solver.system().components()[i] << " " << task.component_mol[i];
+  return text.str();
+}
+
+}  // namespace
+
+SweepReport sweep_watts_bath(unsigned seed, int count) {
+  const Names components{"Ni^2+", "SO4^2-", "Cl^-", "H3BO3", "Na^+", "Ca^2+"};
+  std::vector<Solver> solvers;
+  for (const double t : {5.0, 25.0, 55.0}) solvers.push_back(solver_of(components, {t}));
+
+  constexpr double lowest = 1e-12, highest = 8, share_absent = 0.125;
+  std::mt19937 random(seed);
+  std::uniform_real_distribution<double> ln_mol(std::log(lowest), std::log(highest)), chance(0, 1);
+  SweepReport report;
+  std::vector<double> microseconds;
+  for (int number = 0; number < count; ++number) {
+    const Solver& solver = solvers[static_cast<std::size_t>(number % 3)];
+    Task task;
+    task.component_mol.assign(solver.system().components().size(), 0);
+    for (std::size_t i = 1; i < task.component_mol.size(); ++i) {
+      const double mol = std::exp(ln_mol(random));
+      task.component_mol[i] = chance(random) < share_absent ? 0 : mol;
+    }
+    task.component_mol[0] = neutral_protons(solver.system(), task.component_mol);
+    if (number % 2 == 1) let_precipitate(task, solver.system());
+
+    const auto start = std::chrono::steady_clock::now();
+    const auto answer = solver.solve(task);
+    const auto stop = std::chrono::steady_clock::now();
+    microseconds.push_back(std::chrono::duration<double, std::micro>(stop - start).count());
+    if (!answer) {
+      report.failures.push_back(description(solver, task, seed, number) + "\n    " + text(answer.problems()));
+      continue;
+    }
+    report.worst_mass_balance = std::max(report.worst_mass_balance, answer->residuals.mass_balance);
+    report.worst_charge = std::max(report.worst_charge, answer->residuals.charge_mol_per_kg);
+  }
+  std::sort(microseconds.begin(), microseconds.end());
+  if (!microseconds.empty()) {
+    report.median_microseconds = microseconds[microseconds.size() / 2];
+    report.slowest_microseconds = microseconds.back();
+  }
+  return report;
+}
+
+}  // namespace bathwright::speciation
