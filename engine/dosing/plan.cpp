@@ -265,7 +265,7 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
   plan.unmet = unmet_aims(tank, chemistry, plan.final_view);
   plan.feasible = plan.unmet.empty();
   for (const Step& step : plan.steps)
-    for (const Check& check : step.checks) plan.feasible = plan.feasible && check.ok;
+    for (const Check& check : step.checks) plan.feasible = plan.feasible && (check.ok || !check.stops);
   plan.probability_in_window = chance_in_window(tank, chemistry, sheet.now, plan.final_view, uncertainty);
   sheet.cautions = cautions_for(tank, chemistry.type(), plan);
   sheet.plans.push_back(std::move(plan));

@@ -52,22 +52,22 @@ std::string degrees(units::Celsius t) { return significant(t.v, 3) + " degC"; }
 void check_solids(const Chemistry& chemistry, const TankView& view, std::vector<Check>& checks) {
   for (const Headroom& room : view.headroom) {
     if (room.slow) continue;
-    const auto judge = [&](double log10_room, bool covered, units::Celsius t) {
+    const auto judge = [&](double log10_room, bool covered, units::Celsius t, bool stops) {
       if (!covered) return;
       const bool ok = log10_room >= 0;
-      checks.push_back({room.solid + " at " + degrees(t), ok,
-                        (ok ? "below saturation by " : "above saturation by ") +
-                            significant(std::pow(10, std::abs(log10_room)), 3) + " times (ion product)" +
-                            (ok || room.sign_in_tank.empty() ? "" : ": " + room.sign_in_tank)});
+      std::string detail = significant(100 * std::pow(10, -log10_room), 3) + " % of saturation";
+      if (!ok && !room.sign_in_tank.empty()) detail += ": " + room.sign_in_tank;
+      checks.push_back({room.solid + " at " + degrees(t), ok, stops, std::move(detail)});
     };
-    judge(room.working_log10, room.covers_working, chemistry.working_temperature());
-    judge(room.idle_log10, room.covers_idle, chemistry.idle_temperature());
+    judge(room.working_log10, room.covers_working, chemistry.working_temperature(), true);
+    // What crystallises over an idle weekend is for a person to weigh: the aims may allow nothing else.
+    judge(room.idle_log10, room.covers_idle, chemistry.idle_temperature(), false);
   }
 }
 
 void check_volume(const Tank& tank, const TankView& view, std::vector<Check>& checks) {
   const double brim = tank.working_volume.v + tank.freeboard.v;
-  checks.push_back({"freeboard", view.volume_L <= brim,
+  checks.push_back({"freeboard", view.volume_L <= brim, true,
                     significant(view.volume_L, 5) + " L of " + significant(brim, 5) + " L to the brim"});
 }
 
@@ -80,7 +80,7 @@ void check_pH(const Tank& tank, const BathType& type, const TankView& view, std:
       high = std::isnan(window.stop_high) ? std::max(high, window.high) : window.stop_high;
     }
   const bool ok = !(view.pH < low) && !(view.pH > high);
-  checks.push_back({"pH on the way", ok,
+  checks.push_back({"pH on the way", ok, true,
                     "pH " + significant(view.pH, 3) + ", stop below " + significant(low, 3) + " and above " +
                         significant(high, 3)});
 }
@@ -149,13 +149,23 @@ std::vector<std::string> cautions_for(const Tank& tank, const BathType& type, co
     return std::any_of(plan.additions.begin(), plan.additions.end(),
                        [&](const Addition& a) { return a.chemical == id; });
   };
+  const auto stock_name = [&](const std::string& id) {
+    const bath::ShelfItem* item = tank.on_shelf(id);
+    return item ? item->stock.name + ": " : std::string();
+  };
+  const auto matters = [&](const std::string& subject) {
+    return subject.empty() || added(subject) || tank.aim(subject) != nullptr;
+  };
+  std::vector<std::string> spoken_for;  // chemicals the bath type itself warns of
   for (const bath::Level level : {bath::Level::stop, bath::Level::warn, bath::Level::notice})
     for (const bath::Caution& caution : type.cautions)
-      if (caution.level == level &&
-          (caution.subject.empty() || type.quantity(caution.subject) || added(caution.subject)))
-        say(caution.text);
+      if (caution.level == level && matters(caution.subject)) {
+        say(stock_name(caution.subject) + caution.text);
+        spoken_for.push_back(caution.subject);
+      }
   for (const Addition& addition : plan.additions)
-    if (const bath::ShelfItem* item = tank.on_shelf(addition.chemical))
+    if (const bath::ShelfItem* item = tank.on_shelf(addition.chemical);
+        item && std::find(spoken_for.begin(), spoken_for.end(), addition.chemical) == spoken_for.end())
       for (const std::string& caution : item->stock.cautions) say(item->stock.name + ": " + caution);
   say("The supplier's safety data sheet, local codes and licensed practice decide; this sheet does not "
       "replace them.");

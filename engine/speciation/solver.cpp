@@ -179,6 +179,15 @@ bool curves_upward(Workspace& w) {
       curvature(r, c) = (r == c ? 1 : 0) + std::sqrt(m(i) * m(j)) * G(i, c);
     }
   curvature = (curvature + curvature.transpose()) / 2;
+  // A steep wall across the charged direction, in which single-ion coefficients are a convention and may
+  // curve downward.
+  Vector charged(size);
+  for (Index r = 0; r < size; ++r) {
+    const Index i = abundant[static_cast<std::size_t>(r)];
+    charged(r) = w.charge(i) * std::sqrt(m(i));
+  }
+  if (charged.squaredNorm() > 0)
+    curvature += 1e4 * (1 + curvature.norm()) / charged.squaredNorm() * charged * charged.transpose();
   return Eigen::LLT<Matrix>(curvature).info() == Eigen::Success;
 }
 

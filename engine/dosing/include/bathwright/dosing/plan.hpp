@@ -10,6 +10,7 @@ namespace bathwright::dosing {
 struct Check {
   std::string name;  ///< "boric acid at 18 degC"
   bool ok = true;
+  bool stops = true;   ///< failing it makes the plan infeasible; else it is something to know (the idle tank)
   std::string detail;  ///< "12 kg more would dissolve"
 };
 
@@ -38,7 +39,7 @@ struct Step {
 
 struct Plan {
   std::string kind;       ///< "least cost"
-  bool feasible = false;  ///< every aim met, every check passed
+  bool feasible = false;  ///< every aim met, every check passed that stops a plan
   double cost = 0;
   double salt_load_mol = 0;  ///< ions brought in, mol: what makes the next bleed larger
   /// Chance that every controlled quantity ends inside its window, from the analysis' uncertainty alone,
