@@ -1,0 +1,129 @@
+#include "report.hpp"
+
+#include <algorithm>
+#include <bathwright/data/csv.hpp>
+#include <cmath>
+#include <cstdio>
+#include <fstream>
+#include <map>
+#include <sstream>
+
+#include "mixture.hpp"
+
+namespace bathwright::reference {
+
+std::vector<Figure> read_figures(std::string_view table) {
+  const std::string name(table);
+  std::ifstream file(REFERENCE_DIR "/" + name + ".csv");
+  std::stringstream content;
+  content << file.rdbuf();
+  constexpr std::string_view numeric[] = {"T_C", "value", "tolerance"};
+  const auto rows = data::CsvTable::read(name + ".csv", content.str(), numeric);
+  std::vector<Figure> figures;
+  if (!rows) return figures;
+  for (std::size_t i = 0; i < rows->size(); ++i) {
+    const data::CsvRow row = (*rows)[i];
+    figures.push_back({name, std::string(row["id"]), std::string(row["system"]),
+                       std::string(row["conditions"]), std::string(row["quantity"]), std::string(row["unit"]),
+                       row.number("T_C"), row.number("value"), row.number("tolerance"),
+                       row["from_memory"] == "yes"});
+  }
+  return figures;
+}
+
+bool Line::inside() const { return covered() && error_in_tolerances() <= 1; }
+
+double Line::error_in_tolerances() const {
+  return std::abs(*computed.value - figure.published) / figure.tolerance;
+}
+
+std::vector<Line> compare_all() {
+  using activity::ModelKind;
+  using Compute = Computed (*)(const Figure&, ModelKind);
+  constexpr std::pair<const char*, Compute> tables[] = {
+      {"mean_activity", compute_activity},
+      {"osmotic", compute_activity},
+      {"ph", compute_pH},
+      {"supplement_ph", compute_pH},
+      {"solubility", compute_solubility},
+      {"supplement_solubility", compute_solubility},
+  };
+  std::vector<Line> lines;
+  for (const auto& [table, compute] : tables)
+    for (const Figure& figure : read_figures(table)) {
+      lines.push_back({figure, ModelKind::pitzer, compute(figure, ModelKind::pitzer)});
+      if (compute == compute_solubility) continue;
+      const Recipe recipe = read_recipe(figure.conditions, figure.system);
+      const auto mixture = mix(recipe, figure.t_C, ModelKind::davies);
+      if (recipe.empty() || !mixture) continue;
+      const auto answer = mixture->solver->solve(mixture->task);
+      constexpr double dilute = 0.1;  // mol/kg
+      if (answer && answer->ionic_strength < dilute)
+        lines.push_back({figure, ModelKind::davies, compute(figure, ModelKind::davies)});
+    }
+  return lines;
+}
+
+namespace {
+
+std::string number(double value) {
+  char text[32];
+  std::snprintf(text, sizeof text, "%.4g", value);
+  return text;
+}
+
+std::string verdict(const Line& line) {
+  if (!line.covered()) return "not covered: " + line.computed.not_covered;
+  return line.inside() ? "inside" : "outside";
+}
+
+void write_row(std::ostringstream& out, const Line& line) {
+  const Figure& f = line.figure;
+  out << "| " << f.id << " | " << f.system << " | " << f.conditions << " | " << f.t_C << " | " << f.quantity
+      << " | " << number(f.published) << " | ";
+  if (line.computed.value)
+    out << number(*line.computed.value) << " | "
+        << number(100 * (*line.computed.value - f.published) / std::abs(f.published));
+  else
+    out << " | ";
+  out << " | " << number(f.tolerance) << " | " << verdict(line) << " | " << activity::name(line.model)
+      << " |\n";
+}
+
+constexpr std::string_view head =
+    "| id | system | conditions | degC | quantity | published | computed | error % | tolerance | verdict | model "
+    "|\n|---|---|---|---|---|---|---|---|---|---|---|\n";
+
+}  // namespace
+
+std::string markdown(const std::vector<Line>& lines) {
+  std::ostringstream out;
+  out << "# Computed against published figures\n\nWritten by the target `reference_report`; do not edit. The "
+         "sources stand in the tables, the reasons of the misses in `README.md`. \"Not covered\" rows are not "
+         "judged; a value among them is shown for interest.\n\n"
+         "| table | model | rows | inside | outside | not covered |\n|---|---|---|---|---|---|\n";
+  struct Count {
+    int rows = 0, inside = 0, outside = 0;
+  };
+  std::map<std::pair<std::string, std::string_view>, Count> counts;
+  std::vector<const Line*> outside;
+  for (const Line& line : lines) {
+    Count& count = counts[{line.figure.table, activity::name(line.model)}];
+    ++count.rows;
+    count.inside += line.inside();
+    if (line.covered() && !line.inside()) ++count.outside, outside.push_back(&line);
+  }
+  for (const auto& [key, c] : counts)
+    out << "| " << key.first << " | " << key.second << " | " << c.rows << " | " << c.inside << " | "
+        << c.outside << " | " << c.rows - c.inside - c.outside << " |\n";
+  std::stable_sort(outside.begin(), outside.end(), [](const Line* a, const Line* b) {
+    return a->error_in_tolerances() > b->error_in_tolerances();
+  });
+  out << "\n## Outside the tolerance, worst first\n\n" << head;
+  for (const Line* line : outside) write_row(out, *line);
+  out << "\n## All rows\n\n" << head;
+  for (const Line& line : lines) write_row(out, line);
+  return std::move(out).str();
+}
+
+}  // namespace bathwright::reference

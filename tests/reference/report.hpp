@@ -1,0 +1,47 @@
+// Compares what the engine computes with the published figures of the tables beside this file.
+#pragma once
+
+#include <bathwright/activity/model.hpp>
+#include <optional>
+#include <string>
+#include <string_view>
+#include <vector>
+
+namespace bathwright::reference {
+
+/// One published figure: a row of mean_activity.csv, osmotic.csv, ph.csv, solubility.csv ...
+struct Figure {
+  std::string table, id, system, conditions, quantity, unit;
+  double t_C = 0, published = 0, tolerance = 0;
+  bool from_memory = false;
+};
+
+std::vector<Figure> read_figures(std::string_view table);
+
+/// What the engine makes of it, or why it cannot.
+struct Computed {
+  std::optional<double> value;
+  std::string not_covered;  ///< the reason, where there is no value to be judged
+};
+
+struct Line {
+  Figure figure;
+  activity::ModelKind model;
+  Computed computed;
+
+  [[nodiscard]] bool covered() const { return computed.value && computed.not_covered.empty(); }
+  [[nodiscard]] bool inside() const;
+  [[nodiscard]] double error_in_tolerances() const;
+};
+
+Computed compute_activity(const Figure& figure, activity::ModelKind model);    ///< mean_activity, osmotic
+Computed compute_pH(const Figure& figure, activity::ModelKind model);          ///< ph, supplement_ph
+Computed compute_solubility(const Figure& figure, activity::ModelKind model);  ///< solubility, Pitzer only
+
+/// Every row of every table with Pitzer, and with Davies where the ionic strength stays below 0.1 mol/kg.
+std::vector<Line> compare_all();
+
+/// The report as Markdown: counts, the worst rows, every row.
+std::string markdown(const std::vector<Line>& lines);
+
+}  // namespace bathwright::reference
