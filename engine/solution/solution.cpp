@@ -73,20 +73,6 @@ activity::AcidSet acid_set_for(const speciation::Composition& component_mol) {
   return total("Cl^-") > total("SO4^2-") / 3 ? activity::AcidSet::chloride : activity::AcidSet::sulfate;
 }
 
-/// pH is held with the stated counter-ion; without one, with chloride where acid is needed and sodium where
-/// alkali is, which a solve without holding tells.
-Result<Equilibrium> solve_with_pH(const Recipe& recipe, const Solver& solver, Task& task) {
-  if (!recipe.pH) return solver.solve(task);
-  std::string counter_ion = recipe.counter_ion;
-  if (counter_ion.empty()) {
-    const auto free = solver.solve(task);
-    if (!free) return free.problems();
-    counter_ion = free->pH() > *recipe.pH ? "Cl^-" : "Na^+";
-  }
-  task.pH = speciation::HeldPh{*recipe.pH, *solver.system().component(counter_ion)};
-  return solver.solve(task);
-}
-
 Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
   const Equilibria& equilibria = Equilibria::built_in(activity::convention(kind));
   auto substances = read_ingredients(recipe, equilibria);
@@ -102,10 +88,7 @@ Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
   std::vector<std::string> names = *std::move(components);
   for (const auto& [component, mol] : contents->component_mol)
     if (mol != 0) names.push_back(component);
-  if (recipe.pH && recipe.counter_ion.empty())
-    names.insert(names.end(), {"Cl^-", "Na^+"});
-  else if (recipe.pH)
-    names.push_back(recipe.counter_ion);
+  if (recipe.pH) names.push_back(recipe.counter_ion);
   auto system = ChemicalSystem::make(equilibria, names);
   if (!system) return system.problems();
   auto solver = Solver::prepare(std::make_shared<const ChemicalSystem>(*std::move(system)), kind,
@@ -123,7 +106,8 @@ Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
   task.solids = *std::move(rules);
   for (const auto& [name, atm] : recipe.gases_atm)
     task.gases.push_back({*solver->system().gas(name), atm * bar_per_atm});
-  auto equilibrium = solve_with_pH(recipe, *solver, task);
+  if (recipe.pH) task.pH = speciation::HeldPh{*recipe.pH, *solver->system().component(recipe.counter_ion)};
+  auto equilibrium = solver->solve(task);
   if (!equilibrium) return equilibrium.problems();
   speciation::Coverage coverage = speciation::coverage(*solver, *equilibrium);
   return Solved{&equilibria,     *std::move(substances),  *std::move(solver),

@@ -27,7 +27,7 @@ struct Recipe {
   units::Celsius temperature{25};
   std::optional<activity::ModelKind> model;  ///< nothing: chosen by coverage and ionic strength
   std::optional<double> pH;                  ///< held with acid or alkali of the counter-ion
-  std::string counter_ion;                   ///< "Cl^-", "Na^+"; empty: chloride for acid, sodium for alkali
+  std::string counter_ion;                   ///< "Cl^-", "Na^+"; needed with pH
   bool per_litre = false;                    ///< a litre of solution, else a kg of water
   std::vector<Ingredient> ingredients;
   MayForm may_form = MayForm::all;

@@ -1,0 +1,54 @@
+// bathwright analyse TANK READINGS: readings to concentrations with their uncertainty.
+#include <bathwright/sheets/analysis_sheet.hpp>
+
+#include "context.hpp"
+#include "tank_state.hpp"
+#include "view_json.hpp"
+
+namespace bathwright::command {
+namespace {
+
+int run(const Context& context, const std::string& tank_path, const std::string& readings_path) {
+  const auto shop = open_shop(context, tank_path);
+  if (!shop) return fail(context, shop.problems());
+  const auto analysis = analyse(context, *shop, readings_path);
+  if (!analysis) return fail(context, analysis.problems());
+  Json doc = analysis_document(shop->tank, shop->type(), *analysis);
+  sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), *analysis);
+  if (!context.log_file.empty()) {
+    logbook::NewEntry entry;
+    entry.kind = logbook::EntryKind::analysis;
+    entry.tank = shop->tank.name;
+    entry.body = doc.dump();
+    const auto logged = append_to_log(context, std::move(entry));
+    if (!logged) return fail(context, logged.problems());
+    doc["logged_as"] = logged->entry.seq;
+    sheets::say(lines, words(*logged));
+  }
+  if (context.json)
+    print(doc);
+  else
+    print(lines);
+  const bool in_window = all_in_window(sheets::judge(shop->tank, shop->type(), *analysis));
+  return in_window && analysis->suspects.empty() ? Exit::all_well : Exit::finding;
+}
+
+}  // namespace
+
+void add_analyse(CLI::App& program, Context& context, Action& action) {
+  auto* verb =
+      program.add_subcommand("analyse", "readings to concentrations with their uncertainty")->fallthrough();
+  auto tank = std::make_shared<std::string>();
+  auto readings = std::make_shared<std::string>();
+  verb->add_option("TANK", *tank, "the tank, TOML")->required();
+  verb->add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")->required();
+  add_signature(*verb, context);
+  verb->footer(
+      "Example: bathwright analyse baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
+      "With --log the analysis is logged.\n");
+  verb->callback([&context, &action, tank, readings] {
+    action = [&context, tank, readings] { return run(context, *tank, *readings); };
+  });
+}
+
+}  // namespace bathwright::command

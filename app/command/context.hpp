@@ -1,0 +1,52 @@
+// What every verb needs: the options that stand for all of them, how an answer is printed, how a run ends.
+#pragma once
+
+#include <CLI/CLI.hpp>
+#include <bathwright/base/result.hpp>
+#include <bathwright/sheets/text.hpp>
+#include <functional>
+#include <nlohmann/json.hpp>
+
+namespace bathwright::command {
+
+using Json = nlohmann::ordered_json;
+
+/// The exit status of the program.
+enum Exit : int {
+  all_well = 0,
+  finding = 1,     ///< out of a window, a limit met, a log that does not verify
+  bad_input = 2,   ///< a file or option that cannot be used as it stands
+  unfinished = 3,  ///< no convergence, a log or file that could not be used
+};
+
+struct Context {
+  bool json = false;
+  std::string log_file;  ///< empty: not given
+  std::vector<std::string> plugin_folders;
+  std::string by, shift;
+};
+
+/// "bathwright 0.1.0".
+[[nodiscard]] std::string program_and_version();
+
+/// The head of every document: program, version, warnings.
+[[nodiscard]] Json document(const std::vector<std::string>& warnings);
+
+void print(const sheets::Lines& lines);
+void print(const Json& document);
+
+/// Problems to standard error, one a line; with --json also as a document. Returns the exit status.
+int fail(const Context& context, const Problems& problems);
+
+/// Each adds its verb; `action` is set to what runs when the verb was given.
+using Action = std::function<int()>;
+void add_analyse(CLI::App& program, Context& context, Action& action);
+void add_dose(CLI::App& program, Context& context, Action& action);
+void add_log(CLI::App& program, Context& context, Action& action);
+void add_path(CLI::App& program, Context& context, Action& action);
+void add_plugins(CLI::App& program, Context& context, Action& action);
+void add_solution(CLI::App& program, Context& context, Action& action);
+void add_sources(CLI::App& program, Context& context, Action& action);
+void add_tank(CLI::App& program, Context& context, Action& action);
+
+}  // namespace bathwright::command

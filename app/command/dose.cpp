@@ -1,0 +1,127 @@
+// bathwright dose TANK READINGS: the addition sheet.
+#include <bathwright/sheets/addition_sheet.hpp>
+
+#include "context.hpp"
+#include "tank_state.hpp"
+#include "view_json.hpp"
+
+namespace bathwright::command {
+namespace {
+
+Json json_of(const bath::BathType& type, const dosing::Step& step) {
+  Json checks = Json::array();
+  for (const auto& check : step.checks)
+    checks.push_back({{"name", check.name}, {"ok", check.ok}, {"detail", check.detail}});
+  return {{"number", step.number},
+          {"chemical", step.chemical},
+          {"amount", step.amount},
+          {"unit", step.unit},
+          {"portion", step.portion},
+          {"portions", step.portions},
+          {"dissolve_in_L", step.dissolve_in_L ? Json(*step.dissolve_in_L) : Json(nullptr)},
+          {"how", step.how},
+          {"wait_h", step.wait_h},
+          {"predicted",
+           {{"pH", step.predicted.pH},
+            {"volume_L", step.predicted.volume_L},
+            {"concentrations", concentrations(type, step.predicted)}}},
+          {"checks", std::move(checks)}};
+}
+
+Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
+  Json additions = Json::array(), steps = Json::array();
+  for (const auto& a : plan.additions)
+    additions.push_back({{"chemical", a.chemical}, {"amount", a.amount}, {"unit", a.unit}, {"cost", a.cost}});
+  for (const auto& step : plan.steps) steps.push_back(json_of(type, step));
+  return {{"kind", plan.kind},
+          {"feasible", plan.feasible},
+          {"cost", plan.cost},
+          {"salt_load_mol", plan.salt_load_mol},
+          {"probability_in_window",
+           plan.probability_in_window ? Json(*plan.probability_in_window) : Json(nullptr)},
+          {"additions", std::move(additions)},
+          {"steps", std::move(steps)},
+          {"final",
+           {{"pH", plan.final_view.pH},
+            {"volume_L", plan.final_view.volume_L},
+            {"concentrations", concentrations(type, plan.final_view)},
+            {"headroom", headroom_log10(plan.final_view)}}},
+          {"unmet", plan.unmet}};
+}
+
+Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet) {
+  Json doc = document(sheet.now.warnings);
+  doc["tank"] = shop.tank.name;
+  doc["currency"] = shop.tank.currency;
+  doc["plans"] = Json::array();
+  for (const auto& plan : sheet.plans) doc["plans"].push_back(json_of(shop.type(), plan));
+  doc["refused"] = Json::array();
+  for (const auto& refusal : sheet.refused)
+    doc["refused"].push_back({{"reason", refusal.reason}, {"rule", refusal.rule}});
+  doc["cautions"] = sheet.cautions;
+  return doc;
+}
+
+Result<Logged> log_entry(const Context& context, const Shop& shop, logbook::EntryKind kind,
+                         const Json& body) {
+  logbook::NewEntry entry;
+  entry.kind = kind;
+  entry.tank = shop.tank.name;
+  entry.body = body.dump();
+  return append_to_log(context, std::move(entry));
+}
+
+int run(const Context& context, const std::string& tank_path, const std::string& readings_path) {
+  const auto shop = open_shop(context, tank_path);
+  if (!shop) return fail(context, shop.problems());
+  const auto analysis = analyse(context, *shop, readings_path);
+  if (!analysis) return fail(context, analysis.problems());
+  std::map<std::string, double> uncertainty;
+  for (const auto& level : analysis->results) uncertainty[level.quantity] = level.standard_uncertainty.v;
+  const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis->state, uncertainty);
+  if (!sheet) return fail(context, sheet.problems());
+
+  Json doc = json_of(*shop, *sheet);
+  sheets::Lines lines = sheets::addition_sheet(shop->tank, shop->type(), *analysis, *sheet,
+                                               {signer(context), context.shift, program_and_version()});
+  if (!context.log_file.empty()) {
+    const auto analysed = log_entry(context, *shop, logbook::EntryKind::analysis,
+                                    analysis_document(shop->tank, shop->type(), *analysis));
+    if (!analysed) return fail(context, analysed.problems());
+    const auto planned = log_entry(context, *shop, logbook::EntryKind::plan, doc);
+    if (!planned) return fail(context, planned.problems());
+    doc["logged_as"] = {analysed->entry.seq, planned->entry.seq};
+    sheets::say(lines, words(*analysed));
+    sheets::say(lines, words(*planned));
+  }
+  if (context.json)
+    print(doc);
+  else
+    print(lines);
+  const bool nothing_to_do = !sheet->plans.empty() && sheet->plans.front().feasible &&
+                             sheet->plans.front().additions.empty() && analysis->suspects.empty();
+  return nothing_to_do && all_in_window(sheets::judge(shop->tank, shop->type(), sheet->now.quantity_g_per_L,
+                                                      sheet->now.pH))
+             ? Exit::all_well
+             : Exit::finding;
+}
+
+}  // namespace
+
+void add_dose(CLI::App& program, Context& context, Action& action) {
+  auto* verb =
+      program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
+  auto tank = std::make_shared<std::string>();
+  auto readings = std::make_shared<std::string>();
+  verb->add_option("TANK", *tank, "the tank, TOML")->required();
+  verb->add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")->required();
+  add_signature(*verb, context);
+  verb->footer(
+      "Example: bathwright dose baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
+      "With --log the analysis and the plan are logged.\n");
+  verb->callback([&context, &action, tank, readings] {
+    action = [&context, tank, readings] { return run(context, *tank, *readings); };
+  });
+}
+
+}  // namespace bathwright::command

@@ -1,0 +1,48 @@
+// The shift log as the verbs use it: where it is, writing an entry, the last analysis of a tank.
+#pragma once
+
+#include <bathwright/analysis/analysis.hpp>
+#include <bathwright/logbook/logbook.hpp>
+#include <filesystem>
+
+#include "context.hpp"
+
+namespace bathwright::command {
+
+/// --log, or shift-log.sqlite in the user's data folder ($XDG_DATA_HOME/bathwright,
+/// ~/.local/share/bathwright).
+[[nodiscard]] std::filesystem::path log_path(const Context& context);
+
+/// Who signs: --by, else the user of the computer, else "unsigned".
+[[nodiscard]] std::string signer(const Context& context);
+
+/// Opens for reading; a log that does not exist is a problem.
+Result<logbook::Logbook> open_log_to_read(const Context& context);
+
+/// The log with one entry more, signed with the context's name and shift. Makes the log, and the data folder
+/// where no --log was given, on the first entry.
+struct Logged {
+  logbook::Entry entry;
+  std::filesystem::path path;
+  bool new_log = false;
+};
+Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry);
+
+/// "Logged as entry 12 in shift-log.sqlite."
+[[nodiscard]] std::string words(const Logged& logged);
+
+/// An entry, and what it says, as far as it is an analysis.
+struct LastAnalysis {
+  analysis::Book book;
+  units::Litres volume;
+  units::Celsius temperature;
+};
+
+/// The last analysis of the tank in --log; nothing without --log, without a file there or without an analysis
+/// in it.
+Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const std::string& tank);
+
+/// --by NAME and --shift NAME, for verbs that log.
+void add_signature(CLI::App& verb, Context& context);
+
+}  // namespace bathwright::command

@@ -1,0 +1,71 @@
+#include "shop.hpp"
+
+#include <bathwright/base/nearest.hpp>
+#include <bathwright/plugin_host/discovery.hpp>
+#include <bathwright/shopfiles/tank_file.hpp>
+
+namespace bathwright::command {
+namespace {
+
+std::string joined(const std::vector<std::string>& words) {
+  std::string text;
+  for (const std::string& word : words) text += (text.empty() ? "" : ", ") + word;
+  return text;
+}
+
+Problem unknown_bath_type(const bath::Tank& tank, const plugin_host::BathTypes& types) {
+  std::vector<std::string> ids;
+  for (const auto& type : types.ready()) ids.push_back(type.id);
+  const auto close = nearest(tank.bath_type, ids);
+  return {
+      Fault::bad_input, tank.file + ": bath_type", "no bath type \"" + tank.bath_type + "\" is at hand",
+      ids.empty() ? "a bath type; none was found" : "one of " + joined(ids),
+      close ? "Did you mean " + *close + "?" : "bathwright plugins list says what was found and refused."};
+}
+
+Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
+  std::vector<std::string> known{"pH"};
+  for (const auto& quantity : type.quantities) known.push_back(quantity.id);
+  Problems problems;
+  for (const bath::Aim& aim : tank.aims) {
+    if (aim.quantity == "pH" || type.quantity(aim.quantity)) continue;
+    const auto close = nearest(aim.quantity, known);
+    problems.push_back({Fault::bad_input, tank.file + ": target: " + aim.quantity,
+                        "is not a quantity of " + type.name, "one of " + joined(known),
+                        close ? "Did you mean " + *close + "?" : ""});
+  }
+  return problems;
+}
+
+}  // namespace
+
+plugin_host::BathTypes known_bath_types(const Context& context) {
+  std::vector<std::filesystem::path> folders = plugin_host::built_in_folders();
+  folders.insert(folders.end(), context.plugin_folders.begin(), context.plugin_folders.end());
+  return plugin_host::BathTypes::discover(folders);
+}
+
+Result<Shop> open_shop(const Context& context, const std::string& tank_path) {
+  auto tank = shopfiles::read_tank(tank_path, matter::StockCatalogue::built_in());
+  if (!tank) return tank.problems();
+  const plugin_host::BathTypes types = known_bath_types(context);
+  const bath::BathType* type = types.find(tank->bath_type);
+  if (!type) return unknown_bath_type(*tank, types);
+  if (Problems problems = unknown_aims(*tank, *type); !problems.empty()) return problems;
+  auto chemistry = bath::Chemistry::prepare(*type, tank->temperature, tank->idle_temperature);
+  if (!chemistry) return chemistry.problems();
+  return Shop{*std::move(tank), *std::move(chemistry)};
+}
+
+Result<bath::TankState> state_at_aims(const Shop& shop) {
+  std::map<std::string, double> g_per_L;
+  for (const bath::Aim& aim : shop.tank.aims)
+    if (aim.quantity != "pH") g_per_L[aim.quantity] = aim.aim;
+  const bath::Aim* pH = shop.tank.aim("pH");
+  if (!pH)
+    return Problem{Fault::bad_input, shop.tank.file + ": target", "has no pH", "an aim for pH",
+                   "Add one, or give readings."};
+  return shop.chemistry.state_from(g_per_L, pH->aim, shop.tank.working_volume, shop.tank.temperature);
+}
+
+}  // namespace bathwright::command

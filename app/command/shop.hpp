@@ -1,0 +1,29 @@
+// A tank file with everything that is needed to compute its tank: the bath types, the one it names, the
+// chemistry.
+#pragma once
+
+#include <bathwright/bath/chemistry.hpp>
+#include <bathwright/plugin_host/registry.hpp>
+
+#include "context.hpp"
+
+namespace bathwright::command {
+
+/// The program's own plugin folders, then those named with --plugins.
+[[nodiscard]] plugin_host::BathTypes known_bath_types(const Context& context);
+
+struct Shop {
+  bath::Tank tank;
+  bath::Chemistry chemistry;
+
+  [[nodiscard]] const bath::BathType& type() const { return chemistry.type(); }
+};
+
+/// Reads the tank and prepares its chemistry. Fails on the file, on a bath type nobody provides, on aims at
+/// quantities the bath type does not have, on temperatures it does not cover.
+Result<Shop> open_shop(const Context& context, const std::string& tank_path);
+
+/// The state of a tank as the tank's own aims describe it, at the mark.
+Result<bath::TankState> state_at_aims(const Shop& shop);
+
+}  // namespace bathwright::command

@@ -1,0 +1,85 @@
+// bathwright tank TANK: the state of a tank.
+#include <bathwright/sheets/tank_sheet.hpp>
+
+#include "context.hpp"
+#include "tank_state.hpp"
+#include "view_json.hpp"
+
+namespace bathwright::command {
+namespace {
+
+Json json_of(const Shop& shop, const bath::TankView& view, const std::string& from) {
+  Json doc = document(view.warnings);
+  doc["tank"] = shop.tank.name;
+  doc["bath_type"] = shop.tank.bath_type;
+  doc["state_from"] = from;
+  doc["temperature_C"] = shop.tank.temperature.v;
+  doc["idle_temperature_C"] = shop.tank.idle_temperature.v;
+  doc["volume_L"] = view.volume_L;
+  doc["density_kg_per_L"] = view.density_kg_per_L;
+  doc["pH"] = view.pH;
+  doc["ionic_strength"] = view.ionic_strength;
+  doc["water_activity"] = view.water_activity;
+  doc["concentrations"] = concentrations(shop.type(), view);
+  doc["levels"] = level_list(sheets::judge(shop.tank, shop.type(), view.quantity_g_per_L, view.pH));
+  doc["species"] = Json::array();
+  for (const auto& s : view.species)
+    doc["species"].push_back({{"name", s.name},
+                              {"molality", s.molality},
+                              {"gamma", s.gamma},
+                              {"log10_activity", s.log10_activity}});
+  doc["headroom"] = Json::array();
+  for (const auto& h : view.headroom)
+    doc["headroom"].push_back({{"solid", h.solid},
+                               {"slow", h.slow},
+                               {"working_log10", h.covers_working ? Json(h.working_log10) : Json(nullptr)},
+                               {"idle_log10", h.covers_idle ? Json(h.idle_log10) : Json(nullptr)},
+                               {"working_kg", h.working_kg},
+                               {"idle_kg", h.idle_kg},
+                               {"forms_above_pH", h.forms_above_pH}});
+  doc["indicators"] = Json::array();
+  for (const auto& i : view.indicators)
+    doc["indicators"].push_back({{"id", i.id},
+                                 {"value", i.value ? Json(*i.value) : Json(nullptr)},
+                                 {"unit", i.unit},
+                                 {"meaning", i.meaning},
+                                 {"note", i.note}});
+  doc["cautions"] = Json::array();
+  for (const auto& caution : shop.type().cautions) doc["cautions"].push_back(caution.text);
+  return doc;
+}
+
+int run(const Context& context, const std::string& tank_path, const std::string& readings_path) {
+  const auto shop = open_shop(context, tank_path);
+  if (!shop) return fail(context, shop.problems());
+  const auto start = starting_state(context, *shop, readings_path);
+  if (!start) return fail(context, start.problems());
+  const auto view = shop->chemistry.view(start->state);
+  if (!view) return fail(context, view.problems());
+  if (context.json)
+    print(json_of(*shop, *view, start->from));
+  else
+    print(sheets::tank_sheet(shop->tank, shop->type(), *view, start->from));
+  const bool in_window =
+      all_in_window(sheets::judge(shop->tank, shop->type(), view->quantity_g_per_L, view->pH));
+  return in_window && sheets::crystallising(shop->tank, view->headroom).empty() ? Exit::all_well
+                                                                                : Exit::finding;
+}
+
+}  // namespace
+
+void add_tank(CLI::App& program, Context& context, Action& action) {
+  auto* verb = program.add_subcommand("tank", "state of a tank: levels, free ions, headroom of each solid");
+  verb->fallthrough();
+  auto tank = std::make_shared<std::string>();
+  auto readings = std::make_shared<std::string>();
+  verb->add_option("TANK", *tank, "the tank, TOML")->required();
+  verb->add_option("--readings", *readings,
+                   "today's readings; else the last analysis in --log, else the tank's aims");
+  verb->footer("Example: bathwright tank baths/n-07.toml --readings baths/readings/n-07-morning.toml\n");
+  verb->callback([&context, &action, tank, readings] {
+    action = [&context, tank, readings] { return run(context, *tank, *readings); };
+  });
+}
+
+}  // namespace bathwright::command

@@ -1,0 +1,36 @@
+#include "tank_state.hpp"
+
+#include <bathwright/shopfiles/readings_file.hpp>
+
+namespace bathwright::command {
+
+Result<analysis::Analysis> analyse(const Context& context, const Shop& shop,
+                                   const std::string& readings_path) {
+  const auto readings = shopfiles::read_readings(readings_path);
+  if (!readings) return readings.problems();
+  const auto last = last_analysis(context, shop.tank.name);
+  if (!last) return last.problems();
+  std::optional<analysis::Book> book;
+  if (*last) book = (*last)->book;
+  return analysis::evaluate(*readings, shop.tank, shop.chemistry, book);
+}
+
+Result<StartingState> starting_state(const Context& context, const Shop& shop,
+                                     const std::string& readings_path) {
+  if (!readings_path.empty()) {
+    auto analysis = analyse(context, shop, readings_path);
+    if (!analysis) return analysis.problems();
+    return StartingState{analysis->state, "readings of " + readings_path};
+  }
+  const auto last = last_analysis(context, shop.tank.name);
+  if (!last) return last.problems();
+  auto state = *last ? shop.chemistry.state_from((*last)->book.g_per_L, *(*last)->book.pH, (*last)->volume,
+                                                 shop.tank.temperature)
+                     : state_at_aims(shop);
+  if (!state) return state.problems();
+  return StartingState{*std::move(state),
+                       *last ? "analysis of " + (*last)->book.from
+                             : "as at its aims and at the mark; no readings and no log were given"};
+}
+
+}  // namespace bathwright::command

@@ -1,0 +1,119 @@
+#include <algorithm>
+#include <bathwright/sheets/addition_sheet.hpp>
+#include <bathwright/sheets/names.hpp>
+#include <bathwright/sheets/table.hpp>
+#include <bathwright/sheets/tank_parts.hpp>
+
+namespace bathwright::sheets {
+namespace {
+
+std::string money(double cost, const bath::Tank& tank) {
+  return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);
+}
+
+std::string chance(const dosing::Plan& plan) {
+  if (!plan.probability_in_window) return "not known: no uncertainty given";
+  return fixed(100 * *plan.probability_in_window, 0) + " %";
+}
+
+void weigh_out(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
+  heading(lines, "Weigh out");
+  Table table(
+      {{"chemical"}, {"amount", Align::number}, {"unit"}, {"cost", Align::number}, {"lot, weighed by"}});
+  for (const auto& addition : plan.additions)
+    table.add(
+        {addition.name, figure(addition.amount), addition.unit, fixed(addition.cost, 2), "________________"});
+  append(lines, table.lines());
+  say(lines, "  Cost " + money(plan.cost, tank) + ". Salt brought in " + figure(plan.salt_load_mol) +
+                 " mol. Chance of ending in every window: " + chance(plan) + ".");
+}
+
+void step_lines(Lines& lines, const bath::Tank& tank, const bath::BathType& type, const dosing::Step& step) {
+  std::string what =
+      std::to_string(step.number) + ". " + figure(step.amount) + " " + step.unit + " " + step.name;
+  if (step.portions > 1)
+    what += ", portion " + std::to_string(step.portion) + " of " + std::to_string(step.portions);
+  title(lines, what, "done ____  by ________");
+  if (step.dissolve_in_L) say(lines, "   in " + figure(*step.dissolve_in_L, 3) + " L of water first");
+  if (!step.how.empty()) say(lines, "   " + step.how);
+  std::string then = "   then: ";
+  for (const Judged& j : judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH))
+    then +=
+        j.label + " " + fixed(j.found, j.unit.empty() ? 2 : 1) + (j.unit.empty() ? "" : " " + j.unit) + ", ";
+  say(lines, then + fixed(step.predicted.volume_L, 0) + " L", 6);
+  for (const auto& check : step.checks)
+    say(lines, std::string("   ") + (check.ok ? "ok    " : "STOP  ") + check.name + ": " + check.detail, 6);
+  if (step.wait_h > 0) say(lines, "   wait " + figure(step.wait_h, 2) + " h, stirred, before the next step");
+}
+
+void handling(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
+  heading(lines, "Handling (the safety data sheet decides)");
+  const auto& catalogue = matter::StockCatalogue::built_in();
+  for (const auto& addition : plan.additions) {
+    const bath::ShelfItem* item = tank.on_shelf(addition.chemical);
+    if (!item) continue;
+    std::string hazards;
+    for (const std::string& code : item->stock.hazard_statements)
+      hazards += (hazards.empty() ? "" : "; ") + catalogue.hazard_text(code) + " (" + code + ")";
+    if (!hazards.empty()) say(lines, "  " + addition.name + ": " + hazards + ".", 2);
+    for (const std::string& caution : item->stock.cautions)
+      say(lines, "  " + addition.name + ": " + caution, 2);
+  }
+  say(lines, "  Acid into water, never water into acid. No dust. Nothing solid onto anodes, bags or heaters.",
+      2);
+}
+
+void best_plan(Lines& lines, const bath::Tank& tank, const bath::BathType& type, const dosing::Plan& plan) {
+  if (plan.additions.empty()) {
+    heading(lines, "Additions");
+    say(lines, "  Nothing to add.");
+  } else {
+    weigh_out(lines, tank, plan);
+    heading(lines, "In this order");
+    for (const auto& step : plan.steps) step_lines(lines, tank, type, step);
+    heading(lines, "Expected at the end");
+    append(lines, levels(judge(tank, type, plan.final_view.quantity_g_per_L, plan.final_view.pH)));
+    handling(lines, tank, plan);
+  }
+  for (const std::string& unmet : plan.unmet) say(lines, "  Not reached: " + unmet, 2);
+}
+
+}  // namespace
+
+Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type, const analysis::Analysis& analysis,
+                     const dosing::AdditionSheet& sheet, const Signature& signature) {
+  Lines lines;
+  tank_title(lines, tank, analysis.volume.v);
+  say(lines, "Addition sheet. Volume: " + analysis.volume_from + ".");
+  heading(lines, "Found");
+  append(lines, levels(judge(tank, type, sheet.now.quantity_g_per_L, sheet.now.pH)));
+  for (const auto& suspect : analysis.suspects)
+    say(lines, "  STOP  " + suspect.what + ": " + suspect.reason + " " + suspect.try_this, 8);
+  if (!sheet.plans.empty()) best_plan(lines, tank, type, sheet.plans.front());
+  if (sheet.plans.size() > 1) heading(lines, "Other plans");
+  for (std::size_t i = 1; i < sheet.plans.size(); ++i) {
+    const dosing::Plan& plan = sheet.plans[i];
+    say(lines,
+        "  " + plan.kind + ": " + money(plan.cost, tank) + (plan.feasible ? "" : ", not every aim met"), 2);
+  }
+  if (!sheet.refused.empty()) heading(lines, "Refused");
+  for (const auto& refusal : sheet.refused) say(lines, "  " + refusal.reason + " (" + refusal.rule + ")", 2);
+  if (!sheet.cautions.empty()) heading(lines, "Cautions");
+  for (const std::string& caution : sheet.cautions) say(lines, "  " + caution, 2);
+  lines.emplace_back();
+  const bool ready = !sheet.plans.empty() && sheet.plans.front().feasible && analysis.suspects.empty();
+  if (!ready)
+    say(lines, "Next: do not add yet. A second sample, or a second opinion, comes first.");
+  else if (sheet.plans.front().additions.empty())
+    say(lines, "Next: nothing. Every aim is met.");
+  else
+    say(lines, "Next: a second person approves this sheet; then step 1.");
+  lines.emplace_back();
+  say(lines, "prepared  " + signature.prepared_by +
+                 (signature.shift.empty() ? "" : ", shift " + signature.shift) + ", with " +
+                 signature.program);
+  say(lines, "approved  ____________________    witness  ____________________");
+  return lines;
+}
+
+}  // namespace bathwright::sheets

@@ -1,0 +1,21 @@
+// The slip that goes to the tank: what to weigh out, in which order and portions, and what must hold after
+// each step.
+#pragma once
+
+#include <bathwright/analysis/analysis.hpp>
+#include <bathwright/dosing/plan.hpp>
+#include <bathwright/sheets/text.hpp>
+
+namespace bathwright::sheets {
+
+/// Who and what stands under the slip.
+struct Signature {
+  std::string prepared_by, shift, program;
+};
+
+/// The best plan in full, the others in a line each.
+[[nodiscard]] Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type,
+                                   const analysis::Analysis& analysis, const dosing::AdditionSheet& sheet,
+                                   const Signature& signature);
+
+}  // namespace bathwright::sheets

@@ -1,0 +1,19 @@
+// Names and numbers as people see them.
+#pragma once
+
+#include <bathwright/units/quantity.hpp>
+#include <string>
+#include <string_view>
+
+namespace bathwright::sheets {
+
+/// Ni^2+ as Ni²⁺, "NiSO4.6H2O (alpha)" as NiSO₄·6H₂O (alpha); what is no formula stays as it is.
+[[nodiscard]] std::string pretty(std::string_view name);
+
+/// To so many decimals; "" for NaN.
+[[nodiscard]] std::string fixed(double value, int decimals);
+
+/// To four significant digits; "" for NaN.
+[[nodiscard]] std::string figure(double value, int digits = 4);
+
+}  // namespace bathwright::sheets

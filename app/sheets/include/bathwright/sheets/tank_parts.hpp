@@ -1,0 +1,24 @@
+// Parts of a page that several sheets share: levels against their windows, headroom of solids, free ions.
+#pragma once
+
+#include <bathwright/bath/chemistry.hpp>
+#include <bathwright/sheets/standing.hpp>
+#include <bathwright/sheets/text.hpp>
+
+namespace bathwright::sheets {
+
+/// The tank and its shop left; volume and temperature right.
+void tank_title(Lines& lines, const bath::Tank& tank, double volume_L);
+
+[[nodiscard]] Lines levels(const std::vector<Judged>& judged);
+
+/// Room of each watched solid at the working and the idle temperature.
+[[nodiscard]] Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headroom);
+
+[[nodiscard]] Lines free_ions(const std::vector<bath::SpeciesView>& species);
+
+/// What would crystallise, and where: "NiSO₄·7H₂O at 18 degC: 40 kg would crystallise".
+[[nodiscard]] std::vector<std::string> crystallising(const bath::Tank& tank,
+                                                     const std::vector<bath::Headroom>& headroom);
+
+}  // namespace bathwright::sheets

@@ -1,0 +1,66 @@
+#include <bathwright/sheets/log_sheet.hpp>
+#include <bathwright/sheets/table.hpp>
+
+namespace bathwright::sheets {
+namespace {
+
+/// "2026-03-02T05:40:00.000Z" as "2026-03-02 05:40".
+std::string to_the_minute(const std::string& iso) {
+  constexpr std::size_t minute_end = 16;
+  std::string text = iso.substr(0, minute_end);
+  if (text.size() == minute_end) text[10] = ' ';
+  return text;
+}
+
+}  // namespace
+
+Lines log_list(const std::vector<logbook::Entry>& entries) {
+  Lines lines;
+  if (entries.empty()) {
+    say(lines, "No entry fits.");
+    return lines;
+  }
+  Table table({{"no.", Align::number}, {"logged (UTC)"}, {"kind"}, {"tank"}, {"shift"}, {"by"}});
+  for (const auto& entry : entries) {
+    std::string kind(logbook::name(entry.kind));
+    if (entry.corrects) kind += " of " + std::to_string(*entry.corrects);
+    table.add({std::to_string(entry.seq), to_the_minute(entry.at), kind, entry.tank, entry.shift, entry.by});
+  }
+  append(lines, table.lines());
+  return lines;
+}
+
+Lines log_entry(const logbook::Entry& entry) {
+  Lines lines;
+  title(lines, "Entry " + std::to_string(entry.seq) + ", " + std::string(logbook::name(entry.kind)),
+        entry.at);
+  if (entry.corrects) say(lines, "corrects entry " + std::to_string(*entry.corrects));
+  say(lines, "tank     " + entry.tank);
+  say(lines, "shift    " + (entry.shift.empty() ? "not given" : entry.shift));
+  say(lines, "by       " + entry.by + ", at " + entry.station + ", with " + entry.program);
+  say(lines, "hash     " + entry.hash);
+  say(lines, "follows  " + entry.previous);
+  lines.emplace_back();
+  say(lines, entry.body);
+  return lines;
+}
+
+Lines log_verification(const logbook::Verification& v) {
+  Lines lines;
+  for (const auto& finding : v.problems) say(lines, finding.words, 2);
+  for (const auto& finding : v.clock_steps) say(lines, "Note: " + finding.words, 2);
+  const std::string entries = std::to_string(v.entries) + (v.entries == 1 ? " entry" : " entries");
+  if (!v.ok) {
+    say(lines,
+        entries + " walked; the log is not as it was written. Keep the file and tell who answers for it.");
+    return lines;
+  }
+  say(lines, entries + ", each as it was logged.");
+  if (v.entries > 0) {
+    say(lines, "Last hash, to note elsewhere (a log cut off at its end shows only by it):");
+    say(lines, "  " + v.head);
+  }
+  return lines;
+}
+
+}  // namespace bathwright::sheets

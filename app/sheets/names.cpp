@@ -1,0 +1,29 @@
+#include <array>
+#include <bathwright/matter/formula.hpp>
+#include <bathwright/sheets/names.hpp>
+#include <bathwright/units/show.hpp>
+#include <charconv>
+#include <cmath>
+
+namespace bathwright::sheets {
+
+std::string pretty(std::string_view name) {
+  const std::size_t label = std::min(name.find(" ("), name.size());
+  const auto formula = matter::Formula::parse(name.substr(0, label));
+  return formula ? formula->pretty() + std::string(name.substr(label)) : std::string(name);
+}
+
+std::string fixed(double value, int decimals) {
+  if (std::isnan(value)) return "";
+  std::array<char, 400> buffer;  // the largest double has 309 digits before the mark
+  const auto end =
+      std::to_chars(buffer.data(), buffer.data() + buffer.size(), value, std::chars_format::fixed, decimals)
+          .ptr;
+  return {buffer.data(), end};
+}
+
+std::string figure(double value, int digits) {
+  return std::isnan(value) ? "" : units::significant(value, digits);
+}
+
+}  // namespace bathwright::sheets

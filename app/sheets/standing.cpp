@@ -1,0 +1,49 @@
+#include <bathwright/sheets/names.hpp>
+#include <bathwright/sheets/standing.hpp>
+
+namespace bathwright::sheets {
+
+std::string_view words(Standing standing) {
+  switch (standing) {
+    case Standing::not_controlled:
+      return "";
+    case Standing::in_window:
+      return "in window";
+    case Standing::low:
+      return "add this shift";
+    case Standing::high:
+      return "above window";
+    case Standing::stop:
+      return "stop";
+  }
+  return "";
+}
+
+Standing standing(const bath::Tank& tank, const bath::BathType& type, std::string_view quantity,
+                  double value) {
+  for (const bath::Window& window : type.windows)  // an open limit is NaN and compares false
+    if (window.subject == quantity && (value < window.stop_low || value > window.stop_high))
+      return Standing::stop;
+  const bath::Aim* aim = tank.aim(quantity);
+  if (!aim) return Standing::not_controlled;
+  if (value < aim->low) return Standing::low;
+  return value > aim->high ? Standing::high : Standing::in_window;
+}
+
+std::vector<Judged> judge(const bath::Tank& tank, const bath::BathType& type,
+                          const std::vector<double>& quantity_g_per_L, double pH) {
+  std::vector<Judged> judged;
+  for (const bath::Aim& aim : tank.aims) {
+    if (aim.quantity == "pH") {
+      judged.push_back({&aim, "pH", "", pH, standing(tank, type, "pH", pH)});
+      continue;
+    }
+    for (std::size_t i = 0; i < type.quantities.size(); ++i)
+      if (type.quantities[i].id == aim.quantity)
+        judged.push_back({&aim, type.quantities[i].label, "g/L", quantity_g_per_L[i],
+                          standing(tank, type, aim.quantity, quantity_g_per_L[i])});
+  }
+  return judged;
+}
+
+}  // namespace bathwright::sheets

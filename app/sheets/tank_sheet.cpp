@@ -1,0 +1,53 @@
+#include <algorithm>
+#include <bathwright/sheets/names.hpp>
+#include <bathwright/sheets/table.hpp>
+#include <bathwright/sheets/tank_sheet.hpp>
+
+namespace bathwright::sheets {
+namespace {
+
+Lines indicators(const std::vector<bath::IndicatorValue>& values) {
+  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"what it says"}});
+  for (const auto& v : values)
+    table.add({v.label, v.value ? figure(*v.value) : "", v.unit, v.value ? v.meaning : v.note});
+  return table.lines();
+}
+
+}  // namespace
+
+Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath::TankView& view,
+                 std::string_view state_from) {
+  Lines lines;
+  tank_title(lines, tank, view.volume_L);
+  say(lines, "State: " + std::string(state_from) + ".");
+  say(lines, "pH " + fixed(view.pH, 2) + ", density " + fixed(view.density_kg_per_L, 4) +
+                 " kg/L, ionic strength " + fixed(view.ionic_strength, 2) + " mol/kg, water activity " +
+                 fixed(view.water_activity, 4) + ".");
+  const auto judged = judge(tank, type, view.quantity_g_per_L, view.pH);
+  heading(lines, "Levels");
+  append(lines, levels(judged));
+  heading(lines, "In solution");
+  append(lines, free_ions(view.species));
+  heading(lines, "Headroom");
+  append(lines, headroom(tank, view.headroom));
+  if (!view.indicators.empty()) {
+    heading(lines, "Indicators");
+    append(lines, indicators(view.indicators));
+  }
+  if (!type.cautions.empty()) heading(lines, "Cautions");
+  for (const auto& caution : type.cautions) say(lines, "  " + caution.text, 2);
+  if (!view.warnings.empty()) heading(lines, "What is doubtful");
+  for (const auto& warning : view.warnings) say(lines, "  " + warning, 2);
+  lines.emplace_back();
+  const auto over = crystallising(tank, view.headroom);
+  for (const std::string& solid : over) say(lines, solid + ".", 2);
+  const bool all_in = std::all_of(judged.begin(), judged.end(),
+                                  [](const Judged& j) { return j.standing == Standing::in_window; });
+  if (!all_in)
+    say(lines, "Next: out of window; bathwright dose works out what to add.");
+  else if (over.empty())
+    say(lines, "Every level is in its window and nothing crystallises.");
+  return lines;
+}
+
+}  // namespace bathwright::sheets

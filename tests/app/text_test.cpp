@@ -1,0 +1,36 @@
+// What people read: it fits the page and says what to do next.
+#include <catch2/catch.hpp>
+
+#include "program.hpp"
+
+using app_test::Bench;
+
+TEST_CASE("every sheet is at most 80 columns wide", "[unit][command]") {
+  const Bench bench;
+  bench.write(
+      "s.toml",
+      "temperature = \"25 degC\"\n[per_kg_water]\n\"NiSO4.6H2O\" = 1.0\n\"H2SO4\" = 0.1\n\"H3BO3\" = 0.4\n");
+  const std::string files = app_test::tank + " " + app_test::readings;
+  const std::string arguments =
+      GENERATE_COPY("solution s.toml", "tank " + app_test::tank,
+                    "tank " + app_test::tank + " --readings " + app_test::readings, "analyse " + files,
+                    "dose " + files, "path " + app_test::tank + " --add '12 kg nickel-sulfate'",
+                    "sources Ni^2+", "sources 'NiSO4.6H2O'", "plugins show watts-nickel");
+  const auto run = bench.run(arguments);
+  INFO(arguments << "\n" << run.out << run.err);
+  CHECK(run.status <= 1);
+  CHECK(run.out.size() > 200);
+  CHECK(app_test::widest_line(run.out) <= 80);
+}
+
+TEST_CASE("formulae are shown as people write them", "[unit][command]") {
+  const Bench bench;
+  const auto run = bench.run("analyse " + app_test::tank + " " + app_test::readings);
+  CHECK_THAT(run.out, Catch::Contains("Ni²⁺") && Catch::Contains("H₃BO₃"));
+  CHECK_THAT(run.out, Catch::Contains("Next:"));
+}
+
+TEST_CASE("without a verb the program says what it can do", "[unit][command]") {
+  const auto run = Bench().run("");
+  CHECK_THAT(run.out, Catch::Contains("--help") && Catch::Contains("later"));
+}
