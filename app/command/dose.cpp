@@ -11,7 +11,8 @@ namespace {
 Json json_of(const bath::BathType& type, const dosing::Step& step) {
   Json checks = Json::array();
   for (const auto& check : step.checks)
-    checks.push_back({{"name", check.name}, {"ok", check.ok}, {"detail", check.detail}});
+    checks.push_back(
+        {{"name", check.name}, {"ok", check.ok}, {"stops", check.stops}, {"detail", check.detail}});
   return {{"number", step.number},
           {"chemical", step.chemical},
           {"amount", step.amount},

@@ -63,8 +63,7 @@ Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry) {
 
 std::string words(const Logged& logged) {
   return std::string(logged.new_log ? "New log. " : "") + "Logged as entry " +
-         std::to_string(logged.entry.seq) + ", signed " + logged.entry.by + ", in " + logged.path.string() +
-         ".";
+         std::to_string(logged.entry.seq) + " by " + logged.entry.by + " in " + logged.path.string() + ".";
 }
 
 Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const std::string& tank) {

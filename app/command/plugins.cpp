@@ -26,8 +26,8 @@ int list(const Context& context) {
   sheets::Lines lines;
   sheets::Table table({{"bath type"}, {"version"}, {"state"}, {"file"}});
   for (const auto& listed : types.list())
-    table.add(
-        {listed.id, listed.version, std::string(plugin_host::name(listed.state)), listed.path.string()});
+    table.add({listed.id, listed.version, std::string(plugin_host::name(listed.state)),
+               listed.path.filename().string()});
   if (table.empty())
     sheets::say(lines, "No bath type found. Name a folder with --plugins.");
   else

@@ -3,6 +3,19 @@
 #include <bathwright/shopfiles/readings_file.hpp>
 
 namespace bathwright::command {
+namespace {
+
+/// The tank as an analysis of the log left it. Salt views repeat what the other levels say and are left out.
+Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
+  std::map<std::string, double> g_per_L;
+  for (const auto& [id, level] : last.book.g_per_L) {
+    const bath::Quantity* quantity = shop.type().quantity(id);
+    if (quantity && !quantity->salt_view) g_per_L[id] = level;
+  }
+  return shop.chemistry.state_from(g_per_L, *last.book.pH, last.volume, shop.tank.temperature);
+}
+
+}  // namespace
 
 Result<analysis::Analysis> analyse(const Context& context, const Shop& shop,
                                    const std::string& readings_path) {
@@ -24,9 +37,7 @@ Result<StartingState> starting_state(const Context& context, const Shop& shop,
   }
   const auto last = last_analysis(context, shop.tank.name);
   if (!last) return last.problems();
-  auto state = *last ? shop.chemistry.state_from((*last)->book.g_per_L, *(*last)->book.pH, (*last)->volume,
-                                                 shop.tank.temperature)
-                     : state_at_aims(shop);
+  auto state = *last ? state_of(**last, shop) : state_at_aims(shop);
   if (!state) return state.problems();
   return StartingState{*std::move(state),
                        *last ? "analysis of " + (*last)->book.from

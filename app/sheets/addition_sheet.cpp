@@ -13,7 +13,24 @@ std::string money(double cost, const bath::Tank& tank) {
 
 std::string chance(const dosing::Plan& plan) {
   if (!plan.probability_in_window) return "not known: no uncertainty given";
-  return fixed(100 * *plan.probability_in_window, 0) + " %";
+  const double per_cent = 100 * *plan.probability_in_window;
+  return per_cent > 99 ? "above 99 %" : fixed(per_cent, 0) + " %";
+}
+
+/// An amount as one would weigh or measure it: grams below a kilogram, millilitres below a litre.
+struct Measured {
+  std::string figure, unit;
+};
+Measured measured(double amount, const std::string& unit) {
+  if (amount < 1 && unit == "kg") return {figure(1000 * amount), "g"};
+  if (amount < 1 && unit == "L") return {figure(1000 * amount), "mL"};
+  return {figure(amount), unit};
+}
+
+/// "H3BO3 at 18 degC" with its formula as people write it.
+std::string pretty_check(const std::string& name) {
+  const std::size_t first = std::min(name.find(' '), name.size());
+  return pretty(name.substr(0, first)) + name.substr(first);
 }
 
 void weigh_out(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
@@ -28,39 +45,44 @@ void weigh_out(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
                  " mol. Chance of ending in every window: " + chance(plan) + ".");
 }
 
+void checks(Lines& lines, const std::vector<dosing::Check>& asked) {
+  std::string passed;
+  for (const auto& check : asked)
+    if (check.ok) passed += (passed.empty() ? "" : ", ") + pretty_check(check.name);
+  for (const auto& check : asked)
+    if (!check.ok)
+      say(lines,
+          std::string(check.stops ? "   STOP " : "   watch ") + pretty_check(check.name) + ": " +
+              check.detail,
+          3);
+  if (!passed.empty()) say(lines, "   checked: " + passed, 3);
+}
+
 void step_lines(Lines& lines, const bath::Tank& tank, const bath::BathType& type, const dosing::Step& step) {
-  std::string what =
-      std::to_string(step.number) + ". " + figure(step.amount) + " " + step.unit + " " + step.name;
-  if (step.portions > 1)
-    what += ", portion " + std::to_string(step.portion) + " of " + std::to_string(step.portions);
-  title(lines, what, "done ____  by ________");
+  const Measured amount = measured(step.amount, step.unit);
+  std::string what = std::to_string(step.number) + ". " + amount.figure + " " + amount.unit + " " + step.name;
+  if (step.portions > 1) what += ", " + std::to_string(step.portion) + " of " + std::to_string(step.portions);
+  title(lines, what, "done ____ by ______");
   if (step.dissolve_in_L) say(lines, "   in " + figure(*step.dissolve_in_L, 3) + " L of water first");
   if (!step.how.empty()) say(lines, "   " + step.how);
-  std::string then = "   then: ";
+  std::string then;
   for (const Judged& j : judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH))
     then +=
         j.label + " " + fixed(j.found, j.unit.empty() ? 2 : 1) + (j.unit.empty() ? "" : " " + j.unit) + ", ";
-  say(lines, then + fixed(step.predicted.volume_L, 0) + " L", 6);
-  for (const auto& check : step.checks)
-    say(lines, std::string("   ") + (check.ok ? "ok    " : "STOP  ") + check.name + ": " + check.detail, 6);
+  say(lines, "   then: " + then + fixed(step.predicted.volume_L, 0) + " L", 3);
+  checks(lines, step.checks);
   if (step.wait_h > 0) say(lines, "   wait " + figure(step.wait_h, 2) + " h, stirred, before the next step");
 }
 
 void handling(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
-  heading(lines, "Handling (the safety data sheet decides)");
-  const auto& catalogue = matter::StockCatalogue::built_in();
+  heading(lines, "Hazard statements (the safety data sheet decides)");
   for (const auto& addition : plan.additions) {
     const bath::ShelfItem* item = tank.on_shelf(addition.chemical);
-    if (!item) continue;
-    std::string hazards;
-    for (const std::string& code : item->stock.hazard_statements)
-      hazards += (hazards.empty() ? "" : "; ") + catalogue.hazard_text(code) + " (" + code + ")";
-    if (!hazards.empty()) say(lines, "  " + addition.name + ": " + hazards + ".", 2);
-    for (const std::string& caution : item->stock.cautions)
-      say(lines, "  " + addition.name + ": " + caution, 2);
+    if (!item || item->stock.hazard_statements.empty()) continue;
+    std::string codes;
+    for (const std::string& code : item->stock.hazard_statements) codes += (codes.empty() ? "" : ", ") + code;
+    say(lines, "  " + addition.name + ": " + codes, 2);
   }
-  say(lines, "  Acid into water, never water into acid. No dust. Nothing solid onto anodes, bags or heaters.",
-      2);
 }
 
 void best_plan(Lines& lines, const bath::Tank& tank, const bath::BathType& type, const dosing::Plan& plan) {
@@ -83,7 +105,7 @@ void best_plan(Lines& lines, const bath::Tank& tank, const bath::BathType& type,
 Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type, const analysis::Analysis& analysis,
                      const dosing::AdditionSheet& sheet, const Signature& signature) {
   Lines lines;
-  tank_title(lines, tank, analysis.volume.v);
+  tank_title(lines, tank, analysis.volume.v, analysis.temperature);
   say(lines, "Addition sheet. Volume: " + analysis.volume_from + ".");
   heading(lines, "Found");
   append(lines, levels(judge(tank, type, sheet.now.quantity_g_per_L, sheet.now.pH)));
@@ -112,7 +134,7 @@ Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type, const a
   say(lines, "prepared  " + signature.prepared_by +
                  (signature.shift.empty() ? "" : ", shift " + signature.shift) + ", with " +
                  signature.program);
-  say(lines, "approved  ____________________    witness  ____________________");
+  lines.emplace_back("approved  ____________________    witness  ____________________");
   return lines;
 }
 

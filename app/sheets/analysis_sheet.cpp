@@ -17,7 +17,7 @@ std::vector<Judged> judge(const bath::Tank& tank, const bath::BathType& type,
 
 Lines analysis_sheet(const bath::Tank& tank, const bath::BathType& type, const analysis::Analysis& a) {
   Lines lines;
-  tank_title(lines, tank, a.volume.v);
+  tank_title(lines, tank, a.volume.v, a.temperature);
   say(lines, "Volume: " + a.volume_from + ".");
   heading(lines, "Found");
   Table found({{"quantity"}, {"g/L", Align::number}, {"+/-", Align::number}, {"how"}});

@@ -35,11 +35,11 @@ Lines log_entry(const logbook::Entry& entry) {
   title(lines, "Entry " + std::to_string(entry.seq) + ", " + std::string(logbook::name(entry.kind)),
         entry.at);
   if (entry.corrects) say(lines, "corrects entry " + std::to_string(*entry.corrects));
-  say(lines, "tank     " + entry.tank);
-  say(lines, "shift    " + (entry.shift.empty() ? "not given" : entry.shift));
-  say(lines, "by       " + entry.by + ", at " + entry.station + ", with " + entry.program);
-  say(lines, "hash     " + entry.hash);
-  say(lines, "follows  " + entry.previous);
+  lines.push_back("tank     " + entry.tank);
+  lines.push_back("shift    " + (entry.shift.empty() ? "not given" : entry.shift));
+  lines.push_back("by       " + entry.by + ", at " + entry.station + ", with " + entry.program);
+  lines.push_back("hash     " + entry.hash);
+  lines.push_back("follows  " + entry.previous);
   lines.emplace_back();
   say(lines, entry.body);
   return lines;

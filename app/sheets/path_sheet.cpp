@@ -20,7 +20,7 @@ std::optional<Nearest> nearest_solid(const bath::TankView& view) {
 
 Lines path_sheet(const bath::Tank& tank, const std::vector<PathPoint>& points) {
   Lines lines;
-  tank_title(lines, tank, points.front().view.volume_L);
+  tank_title(lines, tank, points.front().view.volume_L, tank.temperature);
   lines.emplace_back();
   Table table({{"chemical"},
                {"added kg", Align::number},
@@ -31,10 +31,10 @@ Lines path_sheet(const bath::Tank& tank, const std::vector<PathPoint>& points) {
   const auto temperature = [&](bool idle) {
     return units::show(idle ? tank.idle_temperature : tank.temperature, "degC", 3);
   };
-  bool over = false;
+  std::optional<Nearest> first_over;
   for (const PathPoint& point : points) {
     const auto nearest = nearest_solid(point.view);
-    over = over || (nearest && nearest->log10_room < 0);
+    if (!first_over && nearest && nearest->log10_room < 0) first_over = nearest;
     table.add({point.chemical.empty() ? "before" : point.chemical, fixed(point.added_kg, 2),
                fixed(point.view.pH, 2), fixed(point.view.volume_L, 1),
                nearest ? fixed(nearest->log10_room, 2) : "",
@@ -43,8 +43,13 @@ Lines path_sheet(const bath::Tank& tank, const std::vector<PathPoint>& points) {
   append(lines, table.lines());
   lines.emplace_back();
   say(lines, "Room is log10 of how far the solid nearest to forming is from saturation; below 0 it forms.");
-  say(lines, over ? "Something crystallises on the way: add less, or keep the tank warm."
-                  : "Nothing crystallises on the way.");
+  if (!first_over)
+    say(lines, "Nothing forms on the way.");
+  else if (first_over->idle)
+    say(lines, pretty(first_over->solid) + " crystallises when the tank cools to " + temperature(true) +
+                   ": add less, or keep it warm.");
+  else
+    say(lines, "Stop: " + pretty(first_over->solid) + " forms in the working tank.");
   return lines;
 }
 

@@ -28,23 +28,22 @@ void add_if_over(std::vector<std::string>& out, const bath::Headroom& h, units::
 
 }  // namespace
 
-void tank_title(Lines& lines, const bath::Tank& tank, double volume_L) {
+void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Celsius temperature) {
   title(lines, tank.name + (tank.shop.empty() ? "" : ", " + tank.shop),
-        units::show(units::Litres{volume_L}, "L") + ", " + units::show(tank.temperature, "degC", 3));
+        units::show(units::Litres{volume_L}, "L") + ", " + units::show(temperature, "degC", 3));
 }
 
 Lines levels(const std::vector<Judged>& judged) {
-  Table table({{"level"},
+  Table table({{"g/L, or pH"},
                {"found", Align::number},
                {"low", Align::number},
                {"aim", Align::number},
                {"high", Align::number},
-               {"unit"},
                {"state"}});
   for (const Judged& j : judged) {
     const int decimals = j.unit.empty() ? 2 : 1;
     table.add({j.label, fixed(j.found, decimals), fixed(j.aim->low, decimals), fixed(j.aim->aim, decimals),
-               fixed(j.aim->high, decimals), j.unit, std::string(words(j.standing))});
+               fixed(j.aim->high, decimals), std::string(words(j.standing))});
   }
   return table.lines();
 }

@@ -18,7 +18,7 @@ Lines indicators(const std::vector<bath::IndicatorValue>& values) {
 Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath::TankView& view,
                  std::string_view state_from) {
   Lines lines;
-  tank_title(lines, tank, view.volume_L);
+  tank_title(lines, tank, view.volume_L, tank.temperature);
   say(lines, "State: " + std::string(state_from) + ".");
   say(lines, "pH " + fixed(view.pH, 2) + ", density " + fixed(view.density_kg_per_L, 4) +
                  " kg/L, ionic strength " + fixed(view.ionic_strength, 2) + " mol/kg, water activity " +
@@ -34,8 +34,13 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
     heading(lines, "Indicators");
     append(lines, indicators(view.indicators));
   }
-  if (!type.cautions.empty()) heading(lines, "Cautions");
-  for (const auto& caution : type.cautions) say(lines, "  " + caution.text, 2);
+  const auto of_the_tank =
+      [&](const bath::Caution& caution) {  // those of a chemical stand on the addition sheet
+        return caution.subject.empty() || type.quantity(caution.subject);
+      };
+  if (std::any_of(type.cautions.begin(), type.cautions.end(), of_the_tank)) heading(lines, "Cautions");
+  for (const auto& caution : type.cautions)
+    if (of_the_tank(caution)) say(lines, "  " + caution.text, 2);
   if (!view.warnings.empty()) heading(lines, "What is doubtful");
   for (const auto& warning : view.warnings) say(lines, "  " + warning, 2);
   lines.emplace_back();
@@ -45,7 +50,9 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
                                   [](const Judged& j) { return j.standing == Standing::in_window; });
   if (!all_in)
     say(lines, "Next: out of window; bathwright dose works out what to add.");
-  else if (over.empty())
+  else if (!over.empty())
+    say(lines, "Next: keep it warm, or bring down what crystallises before it idles.");
+  else
     say(lines, "Every level is in its window and nothing crystallises.");
   return lines;
 }

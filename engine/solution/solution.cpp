@@ -119,12 +119,6 @@ struct Chosen {
   std::string reason;
 };
 
-/// What keeps an answer from being more than indicative, in a few words.
-std::string shortfall(const speciation::Coverage& coverage) {
-  if (!coverage.missing.empty()) return coverage.missing.front();
-  return coverage.warnings.empty() ? std::string() : coverage.warnings.front();
-}
-
 Result<Chosen> choose_model(const Recipe& recipe) {
   if (recipe.model) {
     auto solved = solve_with(recipe, *recipe.model);
@@ -139,10 +133,11 @@ Result<Chosen> choose_model(const Recipe& recipe) {
   if (!davies) return davies.problems();
   const std::string strength =
       "ionic strength " + units::significant(davies->equilibrium.ionic_strength) + " mol/kg";
-  const std::string lacking = "Pitzer lacks " + shortfall(pitzer->coverage);
   if (davies->coverage.valid)
-    return Chosen{*std::move(davies), strength + " is within its range; " + lacking};
-  return Chosen{*std::move(pitzer), strength + " is beyond Davies' range; " + lacking};
+    return Chosen{*std::move(davies), "Pitzer parameters do not cover this solution, and ionic strength " +
+                                          strength + " is low enough"};
+  return Chosen{*std::move(pitzer), "its parameters do not cover all of this solution, but ionic strength " +
+                                        strength + " is beyond Davies' range"};
 }
 
 /// Dissolved totals of the components, mol per kg of liquid water, and all the water that goes with them.

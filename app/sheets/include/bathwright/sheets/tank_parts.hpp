@@ -8,7 +8,7 @@
 namespace bathwright::sheets {
 
 /// The tank and its shop left; volume and temperature right.
-void tank_title(Lines& lines, const bath::Tank& tank, double volume_L);
+void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Celsius temperature);
 
 [[nodiscard]] Lines levels(const std::vector<Judged>& judged);
 
