@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <array>
 #include <bathwright/data/tables.hpp>
+#include <bathwright/units/show.hpp>
 #include <cmath>
 #include <cstdlib>
 #include <map>
@@ -214,7 +215,8 @@ class Collector {
         has_counter_ion = true;
         const auto [cation, anion] = solutes_[i].charge > 0 ? std::pair{i, j} : std::pair{j, i};
         known = known || binary_rows(cation, anion) != nullptr;
-        estimable = estimable && median(cation, anion).has_value();
+        // Only simple counter-ions decide: those of higher charge are themselves traces.
+        if (std::abs(solutes_[j].charge) <= 2) estimable = estimable && median(cation, anion).has_value();
       }
       if (!has_counter_ion || known || estimable) continue;
       outside_[i] = true;
@@ -267,9 +269,7 @@ class Collector {
       const double I =
           equal ? zc * zc * row.max_molality : 0.5 * row.max_molality * std::abs(zc * za) * (zc - za);
       note(Kind::above_range, {cation, anion},
-           "parameters were fitted up to an ionic strength of " +
-               std::to_string(static_cast<int>(std::lround(I))) + " mol/kg",
-           I);
+           "parameters were fitted up to an ionic strength of " + units::significant(I, 2) + " mol/kg", I);
     }
   }
 

@@ -39,9 +39,8 @@ struct PitzerParameters {
 
 /// Rules for what is not published, each listed in the notes:
 ///   cation - anion   median beta0, beta1, beta2 of the published pairs of the same charge type, C_phi = 0
-///   ion of a charge type with fewer than three published pairs, against every counter-ion: outside the model
-///   like - like      theta = 0 (the electrostatic E-theta stays)
-///   triplets, neutral - anything    0
+///   ion without any published pair, of a charge type with fewer than three published pairs: outside the
+///   model like - like      theta = 0 (the electrostatic E-theta stays) triplets, neutral - anything    0
 PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, AcidSet acid_set);
 
 }  // namespace bathwright::activity

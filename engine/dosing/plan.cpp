@@ -149,10 +149,13 @@ class Planner {
     const double room = (target_volume_L_ + tank_.freeboard.v - volume_without) / target_volume_L_;
     lp.add_row(std::move(brim), -HUGE_VAL, std::max(room, 0.0));
 
-    // First come as near to the aims as the shelf allows; standing off the mark counts least.
-    constexpr double volume_weight = 1e-3;
+    // First come as near to the aims as the shelf allows; standing below the mark counts least, and what
+    // rises above it by displacement only has to stay under the brim.
+    constexpr double fill_weight = 1e-3;
     lp.objective.assign(columns, 0);
-    for (std::size_t k = n; k < columns; ++k) lp.objective[k] = k >= columns - 2 ? volume_weight : 1;
+    std::fill(lp.objective.begin() + static_cast<std::ptrdiff_t>(n), lp.objective.end(), 1);
+    lp.objective[columns - 2] = fill_weight;
+    lp.objective[columns - 1] = 0;
     const auto nearest_to_aims = solve(lp);
     if (!nearest_to_aims) return nearest_to_aims.problems();
     // Then, no farther from them, the least cost; the tiny share of mass makes a free supply unique.

@@ -3,6 +3,7 @@
 #include <bathwright/activity/model.hpp>
 #include <bathwright/speciation/components.hpp>
 #include <cmath>
+#include <limits>
 #include <optional>
 #include <set>
 
@@ -72,23 +73,26 @@ std::vector<Candidate> candidates(const Formula& formula, const std::vector<std:
   return found;
 }
 
-/// The smallest set of candidates that makes up the formula, tried in order of size.
+/// Offers every set of candidates of the smallest size of which `accept` takes at least one.
 template <class Accept>
-bool smallest_set(const std::vector<Candidate>& from, Accept accept) {
+bool smallest_sets(const std::vector<Candidate>& from, Accept accept) {
   constexpr std::size_t largest = 4;
   std::vector<const Candidate*> chosen;
-  auto choose = [&](auto&& self, std::size_t start, std::size_t wanted) -> bool {
-    if (wanted == 0) return accept(chosen);
+  bool found = false;
+  auto choose = [&](auto&& self, std::size_t start, std::size_t wanted) -> void {
+    if (wanted == 0) {
+      found = accept(chosen) || found;
+      return;
+    }
     for (std::size_t i = start; i + wanted <= from.size(); ++i) {
       chosen.push_back(&from[i]);
-      if (self(self, i + 1, wanted - 1)) return true;
+      self(self, i + 1, wanted - 1);
       chosen.pop_back();
     }
-    return false;
   };
-  for (std::size_t size = 1; size <= std::min(largest, from.size()); ++size)
-    if (choose(choose, 0, size)) return true;
-  return false;
+  for (std::size_t size = 1; size <= std::min(largest, from.size()) && !found; ++size)
+    choose(choose, 0, size);
+  return found;
 }
 
 const SpeciesData* species_with_composition(const Formula& formula, const Equilibria& equilibria) {
@@ -114,16 +118,22 @@ Result<Parts> parts_of(const Formula& formula, const Equilibria& equilibria) {
       return parts;
     }
   }
+  // Several sets may fit the atoms (ammonium sulfate also reads as sulfamate, ammonia and water): the one
+  // that makes or takes up least water beside the crystal water is what the formula means.
   Parts parts;
-  const bool found = smallest_set(candidates(formula, equilibria.basis()), [&](const auto& chosen) {
+  double least_water = std::numeric_limits<double>::infinity();
+  const bool found = smallest_sets(candidates(formula, equilibria.basis()), [&](const auto& chosen) {
     const auto x = coefficients(formula, chosen, true);
     if (!x) return false;
+    const auto n = static_cast<Eigen::Index>(chosen.size());
+    const double protons = (*x)(n), water = (*x)(n + 1), made = std::abs(water - formula.crystal_water());
+    if (made > least_water - integer_tolerance) return true;
+    least_water = made;
+    parts = {};
     for (std::size_t k = 0; k < chosen.size(); ++k)
       parts.basis[chosen[k]->name] = std::round((*x)(static_cast<Eigen::Index>(k)));
-    const auto n = static_cast<Eigen::Index>(chosen.size());
-    const double protons = (*x)(n);
     if (std::abs(protons) > integer_tolerance) parts.basis["H^+"] += std::round(protons);
-    parts.water = std::abs((*x)(n + 1)) > integer_tolerance ? (*x)(n + 1) : 0;
+    parts.water = std::abs(water) > integer_tolerance ? water : 0;
     return true;
   });
   if (found) return parts;

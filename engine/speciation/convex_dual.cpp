@@ -191,10 +191,27 @@ bool solve_convex(Workspace& w, double tolerance, int& iterations) {
 
 void cold_start(Workspace& w) {
   const Index n = w.components();
-  const bool held = std::any_of(w.phases.begin(), w.phases.end(),
-                                [](const Phase& phase) { return phase.kind == Phase::Kind::ph; });
-  constexpr double trace = 1e-9;  // where a component comes only from a solid in excess
-  for (Index i = 0; i < n; ++i) w.x(i) = std::log((w.total(i) > 0 ? w.total(i) : trace) / w.water_kg);
+  constexpr double trace = 1e-9;
+  const Vector total = effective_total(w);
+  Vector wanted(n);  // mol of each component to aim for
+  for (Index i = 0; i < n; ++i) wanted(i) = total(i) > 0 ? total(i) : trace;
+  // What comes only from a phase in excess or a held gas starts where that phase is saturated, in equal
+  // activities.
+  constexpr double neutral = -7 * std::numbers::ln10;
+  for (const Phase& phase : w.phases) {
+    if (phase.kind != Phase::Kind::excess && phase.kind != Phase::Kind::gas) continue;
+    double ln_rest = phase.ln_K, share = 0;
+    for (Index i = 0; i < n; ++i) {
+      if (i == w.proton || total(i) > 0)
+        ln_rest -= phase.condition(i) * (i == w.proton ? neutral : std::log(total(i) / w.water_kg));
+      else
+        share += phase.condition(i);
+    }
+    for (Index i = 0; i < n; ++i)
+      if (share > 0 && phase.condition(i) > 0 && i != w.proton && !(total(i) > 0))
+        wanted(i) = w.water_kg * std::exp(std::clamp(ln_rest / share, -60.0, 2.0));
+  }
+  w.x = (wanted / w.water_kg).array().log().matrix();
 
   // Scales every basis species but H^+ to its total, one after the other; each step is a Newton step in the
   // logarithm.
@@ -210,14 +227,20 @@ void cold_start(Workspace& w) {
             sum += w.A(i, j) * amount(j);
             weighted += w.A(i, j) * w.A(i, j) * amount(j);
           }
-        const double wanted = w.total(i) > 0 ? w.total(i) : trace;
-        w.x(i) += std::log(wanted / sum) * sum / weighted;
+        w.x(i) += std::log(wanted(i) / sum) * sum / weighted;
       }
     return Vector(w.A * amounts(w))(w.proton) - w.total(w.proton);
   };
-  if (held) {
-    for (const Phase& phase : w.phases)
-      if (phase.kind == Phase::Kind::ph) scale(phase.ln_K, 6);
+  for (Phase& phase : w.phases) {
+    if (phase.kind != Phase::Kind::ph) continue;
+    // The acid that holds the pH brings its counter-ion: a few rounds settle how much.
+    constexpr int rounds = 4;
+    for (int round = 0; round < rounds; ++round) {
+      phase.mol = -scale(phase.ln_K, 4);
+      for (Index i = 0; i < n; ++i)
+        if (i != w.proton && phase.supply(i) != 0)
+          wanted(i) = std::max(w.total(i) - phase.mol * phase.supply(i), trace);
+    }
     return;
   }
   double low = -20 * std::numbers::ln10, high = 3 * std::numbers::ln10;  // pH 20 to -3

@@ -14,6 +14,7 @@ constexpr double highest_ln_molality = 7;  // above e^7 mol/kg nothing is a solu
 bool solve_coupled(Workspace& w, int& iterations) {
   constexpr int most = 60;
   constexpr double longest_step = 2;  // ln units, of an abundant species
+  constexpr double tiny = std::numeric_limits<double>::min();
   constexpr double met = 2e-13, action_met = 1e-12;
   const Index n = w.components(), count = w.count();
 
@@ -97,7 +98,7 @@ bool solve_coupled(Workspace& w, int& iterations) {
       open_water -= phase.supply_water * phase.mol;
       residual = std::max(residual, std::abs(off));
     }
-    for (Index i = 0; i < n; ++i) residual = std::max(residual, std::abs(open(i)) / (scale(i) + 1e-300));
+    for (Index i = 0; i < n; ++i) residual = std::max(residual, std::abs(open(i)) / (scale(i) + tiny));
     residual = std::max(residual, std::abs(open_water) / w.total_water);
     double action = 0;
     for (Index j = 0; j < count; ++j) action = std::max(action, std::abs(defect(j)));
@@ -107,7 +108,7 @@ bool solve_coupled(Workspace& w, int& iterations) {
     last_worst = worst;
 
     for (Index i = 0; i < n; ++i) {
-      const double s = 1 / (scale(i) + 1e-300);
+      const double s = 1 / (scale(i) + tiny);
       K.row(i) *= s;
       right(i) *= s;
     }

@@ -225,6 +225,7 @@ Outcome Equilibria::resolve() {
   for (const StatedSpecies& stated : stated_species_) {
     const auto row = formed_by.find(stated.name);
     if (row == formed_by.end()) continue;
+    resolve_species(resolve_species, stated.name, stated.where);
     for (const auto* side : {&row->second.second.left, &row->second.second.right})
       for (const Term& term : *side)
         if (term.name != "H2O") resolve_species(resolve_species, term.name, stated.where);

@@ -135,6 +135,29 @@ bool concentrate(Workspace& w, int& iterations) {
   return true;
 }
 
+/// Whether holding the pH would take more of the counter-ion out than there is.
+bool taken_out(const Workspace& w) {
+  for (const Phase& phase : w.phases)
+    if (phase.kind == Phase::Kind::ph)
+      for (Index i = 0; i < w.components(); ++i)
+        if (i != w.proton && phase.supply(i) != 0 && w.total(i) - phase.mol * phase.supply(i) <= 0)
+          return true;
+  return false;
+}
+
+Problem cannot_hold(const std::vector<std::string>& components, const HeldPh& held) {
+  const std::string& ion = components[held.counter_ion];
+  char pH[32];
+  std::snprintf(pH, sizeof pH, "%.3g", held.pH);
+  return {Fault::out_of_range, "pH",
+          std::string("pH ") + pH + " cannot be held with " + ion +
+              ": more of it would have to leave than is there",
+          ion.ends_with('-') ? "a pH at or below that of the solution as given"
+                             : "a pH at or above that of the solution as given",
+          ion.ends_with('-') ? "Name a cation such as Na^+ as the counter-ion."
+                             : "Name an anion such as Cl^- as the counter-ion."};
+}
+
 /// Why no answer exists where the solution could be followed only down to `reached`.
 Problem beyond_reach(const Workspace& reached, const Task& task) {
   constexpr double concentrated = 6;  // ionic strength, mol/kg: most parameters were fitted to less
@@ -344,7 +367,8 @@ Result<Equilibrium> Solver::solve(const Task& task) const {
     w.rebase(molalities(w), w.ln_aw);
     found = solve_coupled(w, iterations);
   }
-  if (!found) return beyond_reach(w, task);
+  if (!found)
+    return task.pH && taken_out(w) ? cannot_hold(system_->components(), *task.pH) : beyond_reach(w, task);
 
   Equilibrium answer = answer_from(w, *this, task, iterations);
   const Residuals& r = answer.residuals;

@@ -25,7 +25,8 @@ Workspace::Workspace(const Solver& solver, const Task& task) : model_(&solver.mo
 
   std::vector<bool> present(all, false);
   present[0] = true;  // water always brings H^+
-  for (std::size_t i = 0; i < all; ++i) present[i] = present[i] || task.component_mol[i] != 0;
+  for (std::size_t i = 0; i < all; ++i)
+    present[i] = present[i] || std::abs(task.component_mol[i]) > absent_mol;
   const auto bring = [&](const std::vector<double>& made_of) {
     for (std::size_t i = 0; i < all; ++i) present[i] = present[i] || made_of[i] != 0;
   };
