@@ -48,7 +48,8 @@ double CsvRow::number(std::string_view column) const {
 
 std::string CsvRow::where() const { return table_->name_ + ":" + std::to_string(table_->rows_[index_].line); }
 
-Result<CsvTable> CsvTable::read(std::string name, std::string_view content, std::span<const std::string_view> numeric) {
+Result<CsvTable> CsvTable::read(std::string name, std::string_view content,
+                                std::span<const std::string_view> numeric) {
   CsvTable table;
   table.name_ = std::move(name);
   Problems problems;
@@ -70,12 +71,14 @@ Result<CsvTable> CsvTable::read(std::string name, std::string_view content, std:
       table.columns_ = std::move(fields);
       for (const std::string_view column : numeric)
         if (std::find(table.columns_.begin(), table.columns_.end(), column) == table.columns_.end())
-          problems.push_back({Fault::bad_input, where, "the column " + std::string(column) + " is missing", "", ""});
+          problems.push_back(
+              {Fault::bad_input, where, "the column " + std::string(column) + " is missing", "", ""});
       continue;
     }
     if (fields.size() != table.columns_.size()) {
       problems.push_back({Fault::bad_input, where, std::to_string(fields.size()) + " fields",
-                          std::to_string(table.columns_.size()) + " as in the header", "Quote fields that hold a comma."});
+                          std::to_string(table.columns_.size()) + " as in the header",
+                          "Quote fields that hold a comma."});
       continue;
     }
     table.rows_.push_back({line_number, std::move(fields)});
@@ -87,7 +90,8 @@ Result<CsvTable> CsvTable::read(std::string name, std::string_view content, std:
                             "a number or nothing", ""});
     }
   }
-  if (table.columns_.empty()) problems.push_back({Fault::bad_input, table.name_, "the table is empty", "a header row", ""});
+  if (table.columns_.empty())
+    problems.push_back({Fault::bad_input, table.name_, "the table is empty", "a header row", ""});
   if (!problems.empty()) return problems;
   return table;
 }
