@@ -114,8 +114,10 @@ void add_dose(CLI::App& program, Context& context, Action& action) {
       program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
   auto tank = std::make_shared<std::string>();
   auto readings = std::make_shared<std::string>();
-  verb->add_option("TANK", *tank, "the tank, TOML")->required();
-  verb->add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")->required();
+  verb->add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
+  verb->add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")
+      ->required()
+      ->check(CLI::ExistingFile);
   add_signature(*verb, context);
   verb->footer(
       "Example: bathwright dose baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"

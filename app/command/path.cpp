@@ -120,12 +120,12 @@ int run(const Context& context, const Options& options) {
 void add_path(CLI::App& program, Context& context, Action& action) {
   auto* verb = program.add_subcommand("path", "free ions, pH and headroom along an addition")->fallthrough();
   auto options = std::make_shared<Options>();
-  verb->add_option("TANK", options->tank, "the tank, TOML")->required();
+  verb->add_option("TANK", options->tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
   verb->add_option("--add", options->additions, "amount and chemical, once for each, in their order")
       ->required();
   verb->add_option("--steps", options->steps, "points for each addition")->check(CLI::Range(1, 1000));
-  verb->add_option("--readings", options->readings,
-                   "start from these; else the last analysis, else the aims");
+  verb->add_option("--readings", options->readings, "start from these; else the last analysis, else the aims")
+      ->check(CLI::ExistingFile);
   verb->footer(
       "Example: bathwright path baths/n-07.toml --add \"4 kg boric-acid\" --add \"12 kg nickel-sulfate\"\n");
   verb->callback(

@@ -90,7 +90,7 @@ int run(const Context& context, const std::string& path) {
 void add_solution(CLI::App& program, Context& context, Action& action) {
   auto* verb = program.add_subcommand("solution", "speciate any solution written as formulae")->fallthrough();
   auto path = std::make_shared<std::string>();
-  verb->add_option("FILE", *path, "the solution, TOML")->required();
+  verb->add_option("FILE", *path, "the solution, TOML")->required()->check(CLI::ExistingFile);
   verb->footer(
       "Example. gypsum.toml:\n"
       "  temperature = \"25 degC\"\n"

@@ -3,6 +3,7 @@
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/sheets/tank_parts.hpp>
+#include <map>
 
 namespace bathwright::sheets {
 namespace {
@@ -45,17 +46,26 @@ void weigh_out(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
                  " mol. Chance of ending in every window: " + chance(plan) + ".");
 }
 
+/// What stops the step in full; what passed as a count. What is only to be watched stands once, under the
+/// steps.
 void checks(Lines& lines, const std::vector<dosing::Check>& asked) {
-  std::string passed;
-  for (const auto& check : asked)
-    if (check.ok) passed += (passed.empty() ? "" : ", ") + pretty_check(check.name);
-  for (const auto& check : asked)
-    if (!check.ok)
-      say(lines,
-          std::string(check.stops ? "   STOP " : "   watch ") + pretty_check(check.name) + ": " +
-              check.detail,
-          3);
-  if (!passed.empty()) say(lines, "   checked: " + passed, 3);
+  int passed = 0;
+  for (const auto& check : asked) {
+    if (check.ok) ++passed;
+    if (!check.ok && check.stops) say(lines, "   STOP " + pretty_check(check.name) + ": " + check.detail, 3);
+  }
+  if (passed > 0)
+    say(lines, "   " + std::to_string(passed) + (passed == 1 ? " check" : " checks") + " passed");
+}
+
+void watch(Lines& lines, const dosing::Plan& plan) {
+  std::map<std::string, std::string> last_detail;
+  for (const auto& step : plan.steps)
+    for (const auto& check : step.checks)
+      if (!check.ok && !check.stops) last_detail[check.name] = check.detail;
+  if (last_detail.empty()) return;
+  heading(lines, "Watch");
+  for (const auto& [name, detail] : last_detail) say(lines, "  " + pretty_check(name) + ": " + detail, 2);
 }
 
 void step_lines(Lines& lines, const bath::Tank& tank, const bath::BathType& type, const dosing::Step& step) {
@@ -93,6 +103,7 @@ void best_plan(Lines& lines, const bath::Tank& tank, const bath::BathType& type,
     weigh_out(lines, tank, plan);
     heading(lines, "In this order");
     for (const auto& step : plan.steps) step_lines(lines, tank, type, step);
+    watch(lines, plan);
     heading(lines, "Expected at the end");
     append(lines, levels(judge(tank, type, plan.final_view.quantity_g_per_L, plan.final_view.pH)));
     handling(lines, tank, plan);

@@ -131,8 +131,7 @@ Result<Chosen> choose_model(const Recipe& recipe) {
     return Chosen{*std::move(pitzer), "its parameters cover every interaction that matters here"};
   auto davies = solve_with(recipe, ModelKind::davies);
   if (!davies) return davies.problems();
-  const std::string strength =
-      "ionic strength " + units::significant(davies->equilibrium.ionic_strength) + " mol/kg";
+  const std::string strength = units::significant(davies->equilibrium.ionic_strength) + " mol/kg";
   if (davies->coverage.valid)
     return Chosen{*std::move(davies), "Pitzer parameters do not cover this solution, and ionic strength " +
                                           strength + " is low enough"};

@@ -32,11 +32,11 @@ TEST_CASE("a run ends with the status it promises", "[unit][command]") {
     const char* arguments;
     int status;
   };
-  const Case c =
-      GENERATE(Case{"", 0}, Case{"--help", 0}, Case{"--version", 0}, Case{"dose --help", 0},
-               Case{"plugins list", 0}, Case{"sources Ni^2+", 0}, Case{"sources Nj^2+", 2},
-               Case{"plugins show no-such", 2}, Case{"no-such-verb", 2}, Case{"solution", 2},
-               Case{"log list --log not-there.sqlite", 3}, Case{"log add gossip --tank T --note x", 2});
+  const Case c = GENERATE(Case{"", 0}, Case{"--help", 0}, Case{"--version", 0}, Case{"dose --help", 0},
+                          Case{"plugins list", 0}, Case{"sources Ni^2+", 0}, Case{"sources Nj^2+", 2},
+                          Case{"plugins show no-such", 2}, Case{"no-such-verb", 2}, Case{"solution", 2},
+                          Case{"solution not-there.toml", 2}, Case{"log list --log not-there.sqlite", 3},
+                          Case{"log add gossip --tank T --note x", 2});
   const Bench bench;
   const auto run = bench.run(c.arguments);
   INFO(c.arguments << "\n" << run.out << run.err);
