@@ -12,7 +12,7 @@ constexpr double far_below_saturation = -3;
 std::string solid_state(const solution::SolidFound& solid) {
   if (solid.dissolved_mol > 0) return figure(solid.dissolved_mol) + " mol/kg dissolves";
   if (solid.precipitated_mol > 0) return figure(solid.precipitated_mol) + " mol/kg precipitates";
-  if (!solid.covers_temperature) return "not known at this temperature";
+  if (!solid.covers_temperature) return "no data at this temperature";
   if (solid.saturation_index > 0) return solid.slow ? "supersaturated, forms slowly" : "supersaturated";
   return "stays dissolved";
 }

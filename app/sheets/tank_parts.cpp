@@ -10,7 +10,7 @@ namespace {
 constexpr double shown_molality = 1e-4;  // below it a species matters to no level
 
 std::string room(bool covers, double log10_room, double kg) {
-  if (!covers) return "not known";
+  if (!covers) return "no data here";
   if (std::isnan(kg)) return (log10_room >= 0 ? "undersaturated" : "supersaturated");
   if (kg < 0) return "crystallises " + figure(-kg, 3) + " kg";
   return "room for " + figure(kg, 3) + " kg";
@@ -57,6 +57,7 @@ Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headro
       table.add({pretty(h.solid), "forms above pH " + fixed(h.forms_above_pH, 2), ""});
       continue;
     }
+    if (!h.covers_working && !h.covers_idle) continue;  // a hydrate that is stable at neither temperature
     table.add({pretty(h.solid), room(h.covers_working, h.working_log10, h.working_kg),
                room(h.covers_idle, h.idle_log10, h.idle_kg)});
   }

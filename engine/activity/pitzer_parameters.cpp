@@ -262,15 +262,10 @@ class Collector {
     if (no_slope)
       note(Kind::no_temperature_data, {cation, anion},
            "no temperature dependence published; the value at 25 degC taken");
-    if (!std::isnan(row.max_molality)) {
-      // Ionic strength of the pure salt at the highest molality fitted: nu = z of the other ion over the
-      // common divisor.
-      const bool equal = zc == -za;
-      const double I =
-          equal ? zc * zc * row.max_molality : 0.5 * row.max_molality * std::abs(zc * za) * (zc - za);
+    if (!std::isnan(row.max_molality))
       note(Kind::above_range, {cation, anion},
-           "parameters were fitted up to an ionic strength of " + units::significant(I, 2) + " mol/kg", I);
-    }
+           "parameters were fitted up to " + units::significant(row.max_molality, 3) + " mol/kg of the salt",
+           row.max_molality);
   }
 
   double mixing_value(const std::vector<MixingRow>& rows, std::vector<std::uint32_t> who, const char* what) {

@@ -219,14 +219,11 @@ void Evaluation::take_from_book(const bath::Component& component) {
   }
 }
 
-std::string made_of(const bath::Quantity& quantity) {
-  std::string text;
-  for (const auto& [species, coefficient] : quantity.counts) {
-    const double size = std::abs(coefficient);
-    text += text.empty() ? (coefficient < 0 ? "-" : "") : (coefficient < 0 ? " - " : " + ");
-    text += size == 1 ? species : fmt::format("{:g} {}", size, species);
-  }
-  return "mol: " + text;
+/// "from Cl^- and Ni^2+": what a level that nobody measured as such was worked out from.
+std::string worked_out_from(const bath::Quantity& quantity) {
+  std::vector<std::string> species;
+  for (const auto& [name, coefficient] : quantity.counts) species.push_back(name);
+  return fmt::format("from {}", fmt::join(species, " and "));
 }
 
 void Evaluation::add_result(const bath::Quantity& quantity) {
@@ -234,7 +231,8 @@ void Evaluation::add_result(const bath::Quantity& quantity) {
   if (!level) return;
   const double molar_mass = quantity.formula.molar_mass().v;
   const auto direct = std::ranges::find(used_, &quantity, &Finding::quantity);
-  std::string how = direct != used_.end() ? direct->how : made_of(quantity);
+  std::string how = direct != used_.end() ? direct->how : worked_out_from(quantity);
+  if (direct == used_.end() && level->mol_per_L == 0) how = "not analysed, taken as 0";
   if (level->from == Origin::electroneutrality) how = "what balances the charges at this pH";
   analysis_.results.push_back({quantity.id,
                                {level->mol_per_L * molar_mass},

@@ -294,8 +294,11 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
       if (!known && component.found_by == FoundBy::analysis)
         problems.push_back({Fault::bad_input, component.species, "no level given for it",
                             "an analysis, or a value from the book", ""});
-      if (known) state.component_mol[static_cast<std::size_t>(i)] = found(i);
-      if (known && found(i) < -1e-12 * mol.cwiseAbs().maxCoeff())
+      // Levels that state one thing twice leave a zero at rounding level on either side.
+      const double rounding = 1e-12 * mol.cwiseAbs().maxCoeff();
+      if (known)
+        state.component_mol[static_cast<std::size_t>(i)] = std::abs(found(i)) <= rounding ? 0 : found(i);
+      if (known && found(i) < -rounding)
         problems.push_back({Fault::bad_input, component.species, "the levels given make its amount negative",
                             "levels that can be together", "Check the titrations."});
     }

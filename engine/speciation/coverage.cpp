@@ -2,8 +2,23 @@
 #include <bathwright/speciation/coverage.hpp>
 #include <cmath>
 #include <cstdio>
+#include <numeric>
 
 namespace bathwright::speciation {
+
+namespace {
+
+/// The molality of the salt that a cation and an anion could make up together.
+double salt_molality(const Solver& solver, const Equilibrium& answer,
+                     const std::vector<std::uint32_t>& pair) {
+  const auto charge = [&](std::uint32_t i) { return std::abs(solver.system().species()[i].charge); };
+  const int common = std::gcd(charge(pair[0]), charge(pair[1]));
+  // One formula unit holds as many of an ion as the other has charges, over the common divisor.
+  return std::min(answer.molality[pair[0]] * common / charge(pair[1]),
+                  answer.molality[pair[1]] * common / charge(pair[0]));
+}
+
+}  // namespace
 
 Coverage coverage(const Solver& solver, const Equilibrium& answer) {
   using Kind = activity::InteractionNote::Kind;
@@ -33,7 +48,7 @@ Coverage coverage(const Solver& solver, const Equilibrium& answer) {
         if (least > significant && std::abs(solver.temperature().v - 25) > 10) found.valid = false;
         break;
       case Kind::above_range:
-        if (answer.ionic_strength <= note.limit_molal) break;
+        if (salt_molality(solver, answer, note.solutes) <= note.limit_molal) break;
         found.warnings.push_back(note.text);
         found.valid = false;
         break;

@@ -49,7 +49,7 @@ Residuals verify(const Solver& solver, const Task& task, const Equilibrium& answ
     if (task.pH && i == 0) count(-answer.held_ph_mol);
     if (task.pH && i == task.pH->counter_ion)
       count(answer.held_ph_mol / system.species()[task.pH->counter_ion].charge);
-    const double scale = std::max({std::abs(task.component_mol[i]), throughput, 1e10 * absent_mol});
+    const double scale = std::max({std::abs(task.component_mol[i]), throughput, 1e15 * absent_mol});
     raise(worst.mass_balance, (found - task.component_mol[i]) / scale);
   }
 

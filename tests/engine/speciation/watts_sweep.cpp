@@ -48,7 +48,8 @@ SweepReport sweep_watts_bath(unsigned seed, int count) {
     const auto stop = std::chrono::steady_clock::now();
     microseconds.push_back(std::chrono::duration<double, std::micro>(stop - start).count());
     if (!answer) {
-      report.failures.push_back(description(solver, task, seed, number) + "\n    " + text(answer.problems()));
+      auto& list = answer.problems().front().kind == Fault::out_of_range ? report.refusals : report.failures;
+      list.push_back(description(solver, task, seed, number) + "\n    " + text(answer.problems()));
       continue;
     }
     report.worst_mass_balance = std::max(report.worst_mass_balance, answer->residuals.mass_balance);

@@ -8,9 +8,11 @@ namespace bathwright::speciation {
 
 struct SweepReport {
   std::vector<std::string> failures;  ///< "seed 1, case 17, 25 degC, precipitation on: ..." with the totals
-  double worst_mass_balance = 0;      ///< relative
-  double worst_charge = 0;            ///< mol/kg
-  double median_microseconds = 0;     ///< of one solve
+  std::vector<std::string>
+      refusals;                    ///< the same, where the solver said why there is no answer (out_of_range)
+  double worst_mass_balance = 0;   ///< relative
+  double worst_charge = 0;         ///< mol/kg
+  double median_microseconds = 0;  ///< of one solve
   double slowest_microseconds = 0;
 };
 

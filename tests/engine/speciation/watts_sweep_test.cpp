@@ -7,7 +7,7 @@
 
 using namespace bathwright::speciation;
 
-TEST_CASE("a nickel bath with wild totals always reaches equilibrium", "[property][.long]") {
+TEST_CASE("a nickel bath with wild totals reaches equilibrium or says why not", "[property][.long]") {
   const char* wanted = std::getenv("BATHWRIGHT_SWEEP");
   const int count = wanted ? std::atoi(wanted) : 3000;
   REQUIRE(count > 0);
@@ -15,11 +15,16 @@ TEST_CASE("a nickel bath with wild totals always reaches equilibrium", "[propert
   constexpr std::size_t shown = 20;
   for (std::size_t i = 0; i < std::min(shown, report.failures.size()); ++i)
     std::cout << report.failures[i] << "\n";
-  std::cout << count << " solves, " << report.failures.size() << " failures; worst mass balance "
-            << report.worst_mass_balance << ", worst charge balance " << report.worst_charge
-            << " mol/kg; median " << report.median_microseconds << " us, slowest "
-            << report.slowest_microseconds << " us\n";
+  for (std::size_t i = 0; i < std::min(shown, report.refusals.size()); ++i)
+    std::cout << report.refusals[i] << "\n";
+  std::cout << count << " solves, " << report.failures.size() << " failures, " << report.refusals.size()
+            << " refused with a reason; worst mass balance " << report.worst_mass_balance
+            << ", worst charge balance " << report.worst_charge << " mol/kg; median "
+            << report.median_microseconds << " us, slowest " << report.slowest_microseconds << " us\n";
   CHECK(report.failures.empty());
+  // Slurries of calcium borate at an ionic strength above 10 mol/kg, where the parameters end: 2 in 100 000
+  // as measured.
+  CHECK(report.refusals.size() <= 1 + static_cast<std::size_t>(count) / 10000);
   CHECK(report.worst_mass_balance < 1e-12);
   CHECK(report.worst_charge < 1e-10);
 }

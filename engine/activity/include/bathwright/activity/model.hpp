@@ -39,7 +39,7 @@ struct InteractionNote {
   Kind kind = Kind::missing;
   std::vector<std::uint32_t>
       solutes;             ///< whose molalities decide whether it matters: positions in the solute list
-  double limit_molal = 0;  ///< above_range: the ionic strength up to which the parameters were fitted
+  double limit_molal = 0;  ///< above_range: molality of the pure salt up to which the parameters were fitted
   std::string text;        ///< "Ni^2+ - HSO4^-: estimated (...)"
 };
 

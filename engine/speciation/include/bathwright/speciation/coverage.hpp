@@ -14,10 +14,9 @@ struct Coverage {
 
 /// Reads the model's notes in the light of the answer.
 ///   a note counts when all its solutes are above 1e-3 mol/kg
-///   not valid: a cation-anion pair that is not published, both above 0.01 mol/kg; an ionic strength above
-///   what the pair's parameters were fitted to, or the model as such; a Gibbs energy that does not curve
-///   upward; a stand-in ion above 1e-3 mol/kg; no temperature data more than 10 degrees away from 25 degC,
-///   both above 0.01 mol/kg
+///   not valid: a cation-anion pair that is not published, both above 0.01 mol/kg; more of a salt than its parameters were
+///   fitted to; an ionic strength beyond the model as such; a Gibbs energy that does not curve upward; a stand-in ion above
+///   1e-3 mol/kg; no temperature data more than 10 degrees away from 25 degC, both above 0.01 mol/kg
 [[nodiscard]] Coverage coverage(const Solver& solver, const Equilibrium& answer);
 
 }  // namespace bathwright::speciation

@@ -100,7 +100,7 @@ class Solver {
 
 /// A total below this counts as absent: far less than one ion, and too near the end of what a double can
 /// divide by.
-inline constexpr double absent_mol = 1e-200;
+inline constexpr double absent_mol = 1e-250;
 
 /// mol of water per kg.
 inline constexpr double water_mol_per_kg = 1 / activity::water_kg_per_mol;
