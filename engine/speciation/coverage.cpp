@@ -6,9 +6,6 @@
 
 namespace bathwright::speciation {
 
-namespace {
-
-/// The molality of the salt that a cation and an anion could make up together.
 double salt_molality(const Solver& solver, const Equilibrium& answer,
                      const std::vector<std::uint32_t>& pair) {
   const auto charge = [&](std::uint32_t i) { return std::abs(solver.system().species()[i].charge); };
@@ -17,8 +14,6 @@ double salt_molality(const Solver& solver, const Equilibrium& answer,
   return std::min(answer.molality[pair[0]] * common / charge(pair[1]),
                   answer.molality[pair[1]] * common / charge(pair[0]));
 }
-
-}  // namespace
 
 Coverage coverage(const Solver& solver, const Equilibrium& answer) {
   using Kind = activity::InteractionNote::Kind;

@@ -1,8 +1,8 @@
 #include "mixture.hpp"
 
-#include <algorithm>
+#include <bathwright/speciation/coverage.hpp>
+#include <cmath>
 #include <regex>
-#include <set>
 
 namespace bathwright::reference {
 namespace {
@@ -13,7 +13,7 @@ constexpr double dilute_kg_water_per_L = 0.997;
 std::string formula_of(const std::string& name) {
   static const std::map<std::string, std::string> formulae{
       {"acetic acid", "CH3COOH"}, {"Na acetate", "NaCH3COO"}, {"Na-acetate", "NaCH3COO"},
-      {"borax", "Na2B4O7"},       {"boric acid", "H3BO3"},
+      {"borax", "Na2B4O7"},       {"boric acid", "H3BO3"},    {"KH phthalate buffer", "KHC8H4O4"},
   };
   const auto found = formulae.find(name);
   return found == formulae.end() ? name : found->second;
@@ -21,17 +21,33 @@ std::string formula_of(const std::string& name) {
 
 }  // namespace
 
+double molar_mass(const std::string& formula) {
+  const auto parsed = matter::Formula::parse(formula);
+  return parsed ? parsed->molar_mass().v : std::nan("");
+}
+
 Recipe read_recipe(const std::string& conditions, const std::string& system) {
   Recipe recipe;
-  static const std::regex part(R"((m|c)\(((?:[^()]|\([^()]*\))*)\)(?: added)?=([0-9.eE+-]+))");
+  static const std::regex part(R"((m|c)\(((?:[^()]|\([^()]*\))*)\)(?: added)?=(trace|[0-9.eE+-]+))");
   for (std::sregex_iterator at(conditions.begin(), conditions.end(), part), end; at != end; ++at) {
     const double scale = (*at)[1] == "c" ? 1 / dilute_kg_water_per_L : 1;
-    recipe[formula_of((*at)[2])] += scale * std::stod((*at)[3]);
+    recipe[formula_of((*at)[2])] += (*at)[3] == "trace" ? trace_molal : scale * std::stod((*at)[3]);
   }
+  if (!recipe.empty()) return recipe;
+
   std::smatch single;
-  static const std::regex bare(R"(^(?:c=)?([0-9.]+) mol/L)");
-  if (recipe.empty() && std::regex_search(conditions, single, bare))
+  static const std::regex molar(R"(^(?:c=)?([0-9.]+) mol/L)");
+  static const std::regex mass(R"(^([0-9.]+) (mass %|g)(?: ([A-Z][A-Za-z0-9().]*))?( per L)?(?: \(.*)?$)");
+  if (std::regex_search(conditions, single, molar)) {
     recipe[formula_of(system)] = std::stod(single[1]) / dilute_kg_water_per_L;
+  } else if (std::regex_search(conditions, single, mass)) {
+    const std::string formula = single[3].matched ? single[3].str() : formula_of(system);
+    const double amount = std::stod(single[1]);
+    if (single[2] == "mass %")
+      recipe[formula] = 1000 * amount / (100 - amount) / molar_mass(formula);
+    else if (single[4].matched)
+      recipe[formula] = amount / molar_mass(formula) / dilute_kg_water_per_L;
+  }
   return recipe;
 }
 
@@ -62,28 +78,26 @@ Result<Mixture> mix(const Recipe& recipe, double t_C, activity::ModelKind model)
   return mixture;
 }
 
-std::string doubt(const speciation::Solver& solver, const speciation::Equilibrium& answer) {
-  using Kind = activity::InteractionNote::Kind;
-  const auto& species = solver.system().species();
-  const double I = answer.ionic_strength;
-  if (I > solver.model().trusted_ionic_strength()) return "ionic strength beyond the model's range";
-  double charged = 0;
-  for (std::size_t j = 0; j < species.size(); ++j)
-    if (species[j].charge != 0) charged += answer.molality[j];
-  // Below 0.001 mol/kg an interaction moves ln gamma by less than 0.001.
-  constexpr double share_that_matters = 0.02, least_molality = 0.001;
-  const double matters_from = std::max(share_that_matters * charged, least_molality);
-  for (const activity::InteractionNote& note : solver.model().notes()) {
-    bool matters = true;
-    for (const std::uint32_t j : note.solutes) matters = matters && answer.molality[j] > matters_from;
-    if (!matters) continue;
-    const bool counter_ions =
-        note.solutes.size() == 2 && species[note.solutes[0]].charge * species[note.solutes[1]].charge < 0;
-    if (note.kind == Kind::outside_model || (note.kind == Kind::missing && counter_ions)) return note.text;
-    if (note.kind == Kind::no_temperature_data && std::abs(solver.temperature().v - 25) > 5) return note.text;
-    if (note.kind == Kind::above_range && I > 1.02 * note.limit_molal) return note.text;
+speciation::Composition nominal_totals(const Recipe& recipe, activity::ModelKind model) {
+  const auto& equilibria = speciation::Equilibria::built_in(activity::convention(model));
+  speciation::Composition totals;
+  for (const auto& [text, mol] : recipe) {
+    const auto formula = matter::Formula::parse(text);
+    if (!formula) continue;
+    const speciation::Composition ions = speciation::nominal_ions(*formula, equilibria);
+    if (ions.empty()) totals[text] += mol;
+    for (const auto& [ion, count] : ions) totals[ion] += mol * count;
   }
-  return {};
+  return totals;
+}
+
+std::string doubt(const speciation::Solver& solver, const speciation::Equilibrium& answer) {
+  const speciation::Coverage found = speciation::coverage(solver, answer);
+  if (found.valid) return {};
+  std::string text;
+  for (const auto* notes : {&found.warnings, &found.missing})
+    for (const std::string& note : *notes) text += (text.empty() ? "" : "; ") + note;
+  return text;
 }
 
 }  // namespace bathwright::reference
