@@ -11,8 +11,14 @@ namespace bathwright::reference {
 /// mol per kg of water, by formula as the tables write it.
 using Recipe = std::map<std::string, double>;
 
-/// Reads "m(NaHCO3)=0.025; m(Na2CO3)=0.025 mol/kg" and the like; c(...) in mol/L is taken as mol in 0.997 kg
-/// of water, right to 1 % in the dilute solutions that are stated so. A single "c=0.1 mol/L" is of `system`.
+/// What "trace" in a table stands for, mol/kg: too little to act on anything else, far above what water gives
+/// off itself.
+inline constexpr double trace_molal = 1e-4;
+
+/// Reads "m(NaHCO3)=0.025; m(Na2CO3)=0.025 mol/kg", "c=0.1 mol/L", "5 mass % NH4Cl", "10 g NaH2PO2.H2O per L"
+/// and the like; what is stated without a formula is of `system`. mol/L and g/L are taken as in 0.997 kg of
+/// water, right to 1 % in the dilute solutions that are stated so (3 % at 100 g/L). Empty where nothing was
+/// read.
 Recipe read_recipe(const std::string& conditions, const std::string& system);
 
 struct Mixture {
@@ -23,8 +29,15 @@ struct Mixture {
 /// Fails on a formula that does not read or cannot be made up from known ions.
 Result<Mixture> mix(const Recipe& recipe, double t_C, activity::ModelKind model);
 
-/// Why the model should not be judged at this composition, or empty: an unknown pair of ions, a temperature
-/// or an ionic strength outside the fit of a pair that matters.
+/// Molality of each ion, every salt taken as fully dissociated; a substance that gives no ions stands for
+/// itself.
+speciation::Composition nominal_totals(const Recipe& recipe, activity::ModelKind model);
+
+/// g/mol; NaN for a formula that does not read.
+double molar_mass(const std::string& formula);
+
+/// Why the model should not be judged at this composition, or empty: what a user would be told, where the
+/// engine calls its own answer no more than indicative (speciation/coverage.hpp).
 std::string doubt(const speciation::Solver& solver, const speciation::Equilibrium& answer);
 
 }  // namespace bathwright::reference

@@ -37,29 +37,42 @@ double Line::error_in_tolerances() const {
   return std::abs(*computed.value - figure.published) / figure.tolerance;
 }
 
+namespace {
+
+bool dilute(const Figure& figure) {
+  const Recipe recipe = read_recipe(figure.conditions, figure.system);
+  const auto mixture = mix(recipe, figure.t_C, activity::ModelKind::davies);
+  if (recipe.empty() || !mixture) return false;
+  const auto answer = mixture->solver->solve(mixture->task);
+  return answer && answer->ionic_strength <= dilute_molal;
+}
+
+}  // namespace
+
 std::vector<Line> compare_all() {
   using activity::ModelKind;
-  using Compute = Computed (*)(const Figure&, ModelKind);
-  constexpr std::pair<const char*, Compute> tables[] = {
-      {"mean_activity", compute_activity},
-      {"osmotic", compute_activity},
-      {"ph", compute_pH},
-      {"supplement_ph", compute_pH},
-      {"solubility", compute_solubility},
-      {"supplement_solubility", compute_solubility},
+  struct Table {
+    const char* name;
+    Computed (*compute)(const Figure&, ModelKind);
+    bool with_davies;
+  };
+  constexpr Table tables[] = {
+      {"mean_activity", compute_activity, true},
+      {"osmotic", compute_activity, true},
+      {"mixed", compute_activity, false},
+      {"isopiestic", compute_isopiestic, false},
+      {"vapour", compute_vapour, false},
+      {"ph", compute_pH, true},
+      {"supplement_ph", compute_pH, true},
+      {"solubility", compute_solubility, false},
+      {"supplement_solubility", compute_solubility, false},
   };
   std::vector<Line> lines;
-  for (const auto& [table, compute] : tables)
-    for (const Figure& figure : read_figures(table)) {
-      lines.push_back({figure, ModelKind::pitzer, compute(figure, ModelKind::pitzer)});
-      if (compute == compute_solubility) continue;
-      const Recipe recipe = read_recipe(figure.conditions, figure.system);
-      const auto mixture = mix(recipe, figure.t_C, ModelKind::davies);
-      if (recipe.empty() || !mixture) continue;
-      const auto answer = mixture->solver->solve(mixture->task);
-      constexpr double dilute = 0.1;  // mol/kg
-      if (answer && answer->ionic_strength < dilute)
-        lines.push_back({figure, ModelKind::davies, compute(figure, ModelKind::davies)});
+  for (const Table& table : tables)
+    for (const Figure& figure : read_figures(table.name)) {
+      lines.push_back({figure, ModelKind::pitzer, table.compute(figure, ModelKind::pitzer)});
+      if (table.with_davies && dilute(figure))
+        lines.push_back({figure, ModelKind::davies, table.compute(figure, ModelKind::davies)});
     }
   return lines;
 }
@@ -68,7 +81,7 @@ namespace {
 
 std::string number(double value) {
   char text[32];
-  std::snprintf(text, sizeof text, "%.4g", value);
+  std::snprintf(text, sizeof text, "%.5g", value);
   return text;
 }
 
@@ -87,12 +100,12 @@ void write_row(std::ostringstream& out, const Line& line) {
   else
     out << " | ";
   out << " | " << number(f.tolerance) << " | " << verdict(line) << " | " << activity::name(line.model)
-      << " |\n";
+      << " | " << line.computed.note << " |\n";
 }
 
 constexpr std::string_view head =
     "| id | system | conditions | degC | quantity | published | computed | error % | tolerance | verdict | model "
-    "|\n|---|---|---|---|---|---|---|---|---|---|---|\n";
+    "| note |\n|---|---|---|---|---|---|---|---|---|---|---|---|\n";
 
 }  // namespace
 

@@ -22,6 +22,7 @@ std::vector<Figure> read_figures(std::string_view table);
 struct Computed {
   std::optional<double> value;
   std::string not_covered;  ///< the reason, where there is no value to be judged
+  std::string note;         ///< what else is to be known of the value
 };
 
 struct Line {
@@ -34,11 +35,20 @@ struct Line {
   [[nodiscard]] double error_in_tolerances() const;
 };
 
-Computed compute_activity(const Figure& figure, activity::ModelKind model);    ///< mean_activity, osmotic
-Computed compute_pH(const Figure& figure, activity::ModelKind model);          ///< ph, supplement_ph
-Computed compute_solubility(const Figure& figure, activity::ModelKind model);  ///< solubility, Pitzer only
+Computed compute_activity(const Figure& figure,
+                          activity::ModelKind model);  ///< mean_activity, osmotic, mixed
+Computed compute_isopiestic(const Figure& figure, activity::ModelKind model);  ///< isopiestic
+Computed compute_vapour(const Figure& figure, activity::ModelKind model);      ///< vapour
+/// ph, supplement_ph: on the conventional scale up to dilute_molal, else unscaled.
+Computed compute_pH(const Figure& figure, activity::ModelKind model);
+Computed compute_solubility(const Figure& figure,
+                            activity::ModelKind model);  ///< solubility and its supplement
 
-/// Every row of every table with Pitzer, and with Davies where the ionic strength stays below 0.1 mol/kg.
+/// Ionic strength up to which Davies is judged and the conventional pH is defined: 0.1 mol/kg to the digits
+/// given.
+inline constexpr double dilute_molal = 0.1005;
+
+/// Every row of every table with Pitzer; single solutions also with Davies up to dilute_molal.
 std::vector<Line> compare_all();
 
 /// The report as Markdown: counts, the worst rows, every row.

@@ -8,57 +8,52 @@
 namespace bathwright::reference {
 namespace {
 
-struct Judged {
-  double value;
-  std::string doubt;
-};
-
-/// One salt at a molality: ln gamma_mean = (1/nu) sum nu_i ln(a_i / (nu_i m)), phi = -ln a_w / (M_w nu m).
-Result<Judged> single_salt(const Recipe& recipe, const Figure& figure, activity::ModelKind model) {
+/// With m_i the molalities of the nominal ions of all salts:
+///   phi = -ln a_w / (M_w sum m_i);  ln gamma_mean(salt) = (1/nu) sum nu_i ln(a_i / m_i)
+Computed of_solution(const Figure& figure, const Recipe& recipe, const std::string& salt,
+                     activity::ModelKind model) {
   const auto mixture = mix(recipe, figure.t_C, model);
-  if (!mixture) return mixture.problems();
+  if (!mixture) return {{}, text(mixture.problems()), {}};
   const auto answer = mixture->solver->solve(mixture->task);
-  if (!answer) return answer.problems();
-  const double m = recipe.begin()->second;
+  if (!answer) return {{}, text(answer.problems()), {}};
+  const speciation::Composition totals = nominal_totals(recipe, model);
   std::string why = doubt(*mixture->solver, *answer);
   if (figure.quantity == "osmotic_coefficient") {
+    double sum = 0;
     std::smatch nu;
-    static const std::regex pattern(R"(nu=(\d))");
-    std::regex_search(figure.unit, nu, pattern);
-    return Judged{-answer->ln_water_activity / (activity::water_kg_per_mol * std::stod(nu[1]) * m),
-                  std::move(why)};
+    static const std::regex stated(R"(nu=(\d))");
+    if (std::regex_search(figure.unit, nu, stated))
+      sum = std::stod(nu[1]) * recipe.begin()->second;
+    else
+      for (const auto& [ion, molality] : totals) sum += molality;
+    return {-answer->ln_water_activity / (activity::water_kg_per_mol * sum), std::move(why), {}};
   }
-  const auto formula = matter::Formula::parse(recipe.begin()->first);
-  if (!formula) return formula.problems();
-  const auto& equilibria = speciation::Equilibria::built_in(activity::convention(model));
-  const speciation::Composition ions = speciation::nominal_ions(*formula, equilibria);
-  if (ions.empty()) return Problem{Fault::out_of_range, "", "the formula has no reading as ions", "", ""};
   double sum = 0, nu = 0;
-  for (const auto& [name, count] : ions) {
-    sum +=
-        count * (answer->ln_activity[*mixture->solver->system().species_index(name)] - std::log(count * m));
+  for (const auto& [ion, count] : nominal_totals({{salt, 1}}, model)) {
+    const auto j = mixture->solver->system().species_index(ion);
+    if (!j) return {{}, "the formula has no reading as ions", {}};
+    sum += count * (answer->ln_activity[*j] - std::log(totals.at(ion)));
     nu += count;
   }
-  return Judged{std::exp(sum / nu), std::move(why)};
+  return {std::exp(sum / nu), std::move(why), {}};
 }
 
 }  // namespace
 
 Computed compute_activity(const Figure& figure, activity::ModelKind model) {
-  if (figure.t_C < 0) return {{}, "below 0 degC"};
+  if (figure.t_C < 0) return {{}, "below 0 degC", {}};
   const Recipe recipe = read_recipe(figure.conditions, figure.system);
-  if (recipe.size() != 1) return {{}, "conditions not read"};
-  const auto found = single_salt(recipe, figure, model);
-  if (!found) return {{}, text(found.problems())};
-  double value = found->value;
+  if (recipe.empty()) return {{}, "conditions not read", {}};
+  const std::string salt = figure.quantity.ends_with("_HCl") ? "HCl" : recipe.begin()->first;
+  Computed found = of_solution(figure, recipe, salt, model);
   std::smatch other;
   static const std::regex relative(R"(relative to ([0-9.]+) mol/kg)");
-  if (std::regex_search(figure.conditions, other, relative)) {
-    const auto base = single_salt({{recipe.begin()->first, std::stod(other[1])}}, figure, model);
-    if (!base) return {{}, text(base.problems())};
-    value /= base->value;
+  if (found.value && std::regex_search(figure.conditions, other, relative)) {
+    const Computed base = of_solution(figure, {{salt, std::stod(other[1])}}, salt, model);
+    if (!base.value) return base;
+    *found.value /= *base.value;
   }
-  return {value, found->doubt};
+  return found;
 }
 
 }  // namespace bathwright::reference
