@@ -64,6 +64,8 @@ TEST_CASE("the primary pH standards at 25 degC agree within 0.02", "[reference]"
 
 TEST_CASE("no fewer rows lie inside their tolerance than when this was written", "[reference]") {
   // A ratchet: raise a number when the engine improves, never lower it without saying why.
+  // Judged are the rows the engine itself does not call indicative (coverage.hpp): a wider caution lowers the
+  // count.
   std::map<std::pair<std::string, activity::ModelKind>, int> inside;
   for (const Line& line : lines()) inside[{line.figure.table, line.model}] += line.inside();
   using activity::ModelKind;
