@@ -9,6 +9,9 @@ if(BATHWRIGHT_SANITIZE)
   target_compile_options(bathwright_options INTERFACE -fsanitize=${BATHWRIGHT_SANITIZE} -fno-omit-frame-pointer -fno-sanitize-recover=all)
   target_link_options(bathwright_options INTERFACE -fsanitize=${BATHWRIGHT_SANITIZE})
 endif()
+if(BATHWRIGHT_FUZZ)  # every part tells the fuzzer which of its branches an input reached
+  target_compile_options(bathwright_options INTERFACE -fsanitize=fuzzer-no-link)
+endif()
 
 # bathwright_part(<name> SOURCES ... [USES <other parts>] [PRIVATE <libraries>])
 # One part of the engine: a static library bathwright::<name> whose public headers stand in
