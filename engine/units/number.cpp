@@ -28,7 +28,10 @@ Problem thousands_separator(std::string_view text, std::string_view where) {
 
 std::string quoted(std::string_view text) {
   constexpr std::size_t longest = 60;  // a message is one line
-  return '"' + std::string(text.substr(0, longest)) + (text.size() > longest ? "...\"" : "\"");
+  if (text.size() <= longest) return '"' + std::string(text) + '"';
+  std::size_t end = longest;
+  while (end > 0 && (static_cast<unsigned char>(text[end]) & 0xC0) == 0x80) --end;  // whole letters only
+  return '"' + std::string(text.substr(0, end)) + "...\"";
 }
 
 Result<NumberAndUnit> split_number(std::string_view text, std::string_view where) {

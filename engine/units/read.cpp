@@ -76,7 +76,7 @@ Result<double> read_equivalents(std::string_view bracket, std::string_view text,
   const Problem expected{
       Fault::bad_input, std::string(where), quoted(text) + " does not say how many equivalents a mole has",
       "a normality as \"0.2 N (2 eq/mol)\"", "Add the equivalents, or give the molarity in mol/L."};
-  if (bracket.empty() || bracket.back() != ')') return expected;
+  if (!bracket.starts_with('(') || !bracket.ends_with(')')) return expected;
   const auto read = split_number(bracket.substr(1, bracket.size() - 2), where);
   if (!read || read->unit != "eq/mol") return expected;
   if (!(read->number > 0 && read->number <= most_equivalents)) {
@@ -136,9 +136,9 @@ Result<Concentration> read_concentration(std::string_view text, std::string_view
   std::string_view unit = read->unit;
   const bool normality = unit.starts_with("N") && (unit.size() == 1 || unit[1] == ' ' || unit[1] == '(');
   if (normality) {
-    const std::size_t open = unit.find('(');
+    const std::size_t bracket = unit.find_first_not_of(' ', 1);
     const auto equivalents =
-        read_equivalents(open == unit.npos ? std::string_view{} : unit.substr(open), text, where);
+        read_equivalents(bracket == unit.npos ? std::string_view{} : unit.substr(bracket), text, where);
     if (!equivalents) return equivalents.problems();
     c.equivalents = *equivalents;
     unit = "N";

@@ -240,6 +240,17 @@ TEST_CASE("what cannot be a reading is refused", "[failure][units]") {
   CHECK(message(read_volume(std::string(5000, '7'))).size() < 400);
 }
 
+TEST_CASE("a message does not cut a letter in two", "[failure][units]") {
+  std::string typed(59, 'x');
+  for (int i = 0; i < 10; ++i) typed += "µ";  // two bytes; the message has room for 60
+  CHECK(message(read_volume(typed)).find('"' + std::string(59, 'x') + "...\"") != std::string::npos);
+}
+
+TEST_CASE("words between a normality and its equivalents are not passed over", "[failure][units]") {
+  CHECK(read_concentration("0.2 N(2 eq/mol)"));
+  CHECK_FALSE(read_concentration("0.2 N acid (2 eq/mol)"));
+}
+
 TEST_CASE("an unknown unit gets the nearest one", "[failure][units]") {
   CHECK(message(read_concentration("14.3 g/K")).find("\"g/L\"") != std::string::npos);
 }
