@@ -8,27 +8,6 @@
 namespace bathwright::command {
 namespace {
 
-solution::Recipe recipe_from(const shopfiles::SolutionFile& file) {
-  solution::Recipe recipe;
-  recipe.file = file.file;
-  recipe.temperature = file.temperature;
-  for (const auto kind :
-       {activity::ModelKind::davies, activity::ModelKind::debye_huckel, activity::ModelKind::pitzer})
-    if (file.model == activity::name(kind)) recipe.model = kind;
-  recipe.pH = file.pH;
-  recipe.counter_ion = file.counter_ion;
-  recipe.per_litre = !file.ingredients.empty() && file.ingredients.front().per_litre;
-  for (const auto& ingredient : file.ingredients)
-    recipe.ingredients.push_back({ingredient.formula, ingredient.amount, ingredient.where});
-  recipe.may_form = file.solids_allowed == shopfiles::SolidsAllowed::all    ? solution::MayForm::all
-                    : file.solids_allowed == shopfiles::SolidsAllowed::none ? solution::MayForm::none
-                                                                            : solution::MayForm::listed;
-  recipe.allowed = file.allowed;
-  recipe.excess = file.excess;
-  recipe.gases_atm = file.gases_atm;
-  return recipe;
-}
-
 Json json_of(const solution::Solution& s) {
   Json doc = document(s.warnings);
   doc["temperature_C"] = s.temperature.v;
@@ -74,9 +53,9 @@ Json json_of(const solution::Solution& s) {
 }
 
 int run(const Context& context, const std::string& path) {
-  const auto file = shopfiles::read_solution(path);
-  if (!file) return fail(context, file.problems());
-  const auto solved = solution::solve(recipe_from(*file));
+  const auto recipe = shopfiles::read_solution(path);
+  if (!recipe) return fail(context, recipe.problems());
+  const auto solved = solution::solve(*recipe);
   if (!solved) return fail(context, solved.problems());
   if (context.json)
     print(json_of(*solved));

@@ -86,8 +86,10 @@ void Evaluation::find_volume() {
     }
     analysis_.volume = {tank_.working_volume.v -
                         readings_.level_below_mark->v * tank_.surface->v};  // dm * dm2 = L
-    analysis_.volume_from = fmt::format("{} at the mark, {} low on {}", show(tank_.working_volume),
-                                        show(*readings_.level_below_mark), show(*tank_.surface));
+    analysis_.volume_from = fmt::format(
+        "{:g} L at the mark, {} low on {:g} dm2", tank_.working_volume.v,
+        readings_.written.text("level_below_mark", fmt::format("{:g} dm", readings_.level_below_mark->v)),
+        tank_.surface->v);
   } else {
     analysis_.volume = tank_.working_volume;
     analysis_.volume_from = "taken as the working volume";
@@ -101,7 +103,8 @@ void Evaluation::find_volume() {
 
 void Evaluation::find_temperature() {
   analysis_.temperature = readings_.temperature.value_or(tank_.temperature);
-  if (!readings_.temperature) note("no temperature given: taken as the tank's, " + show(tank_.temperature));
+  if (!readings_.temperature)
+    note("no temperature given: taken as the tank's, " + show(tank_.temperature, "degC", 3));
 
   constexpr units::Celsius laboratory{20};
   const double expansion = matter::water_density(laboratory) / matter::water_density(analysis_.temperature);
@@ -109,8 +112,8 @@ void Evaluation::find_temperature() {
     note(
         fmt::format("levels are taken to hold at {}; of a sample that was pipetted at {} they are {:.1f} % "
                     "too {} (expansion of water)",
-                    show(analysis_.temperature), show(laboratory), 100 * std::abs(expansion - 1),
-                    expansion > 1 ? "high" : "low"));
+                    show(analysis_.temperature, "degC", 3), show(laboratory, "degC", 3),
+                    100 * std::abs(expansion - 1), expansion > 1 ? "high" : "low"));
   }
 }
 
@@ -290,6 +293,7 @@ void Evaluation::compare_what_was_not_used() {
 void Evaluation::compare_density() {
   analysis_.density_predicted = chemistry_.density(analysis_.state);
   analysis_.density_measured = readings_.density;
+  if (readings_.density) analysis_.density_read = readings_.written.text("density", show(*readings_.density));
   std::ranges::copy(density_misfit(analysis_), std::back_inserter(analysis_.suspects));
 }
 

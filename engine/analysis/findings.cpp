@@ -17,8 +17,8 @@ namespace {
 using units::show;
 
 std::string did_you_mean(std::string_view word, const std::vector<std::string>& candidates) {
-  if (const auto close = nearest(word, candidates)) return fmt::format("Did you mean {}?", *close);
-  return fmt::format("Use one of: {}.", fmt::join(candidates, ", "));
+  const auto close = nearest(word, candidates);
+  return close ? fmt::format("Did you mean {}?", *close) : "";
 }
 
 // The quantity of this id, if a person can find it: what counts protons follows from the pH.
@@ -28,8 +28,8 @@ Result<const bath::Quantity*> quantity_to_find(const bath::BathType& type, const
   if (!quantity) {
     std::vector<std::string> ids;
     for (const bath::Quantity& q : type.quantities) ids.push_back(q.id);
-    return Problem{Fault::bad_input, where, fmt::format("'{}' is not a quantity of {}", id, type.name), "",
-                   did_you_mean(id, ids)};
+    return Problem{Fault::bad_input, where, fmt::format("\"{}\" is not a quantity of {}", id, type.name),
+                   fmt::format("one of {}", fmt::join(ids, ", ")), did_you_mean(id, ids)};
   }
   for (const bath::Component& component : type.components) {
     if (component.found_by == bath::FoundBy::pH && quantity->counts.contains(component.species))
@@ -44,17 +44,17 @@ Result<const Method*> method_that_finds(const bath::Quantity& quantity, const Ti
   const std::string mend = fitting.empty()
                                ? "No titration in the table finds it: state it as a concentration found."
                                : fmt::format("Use {}.", fmt::join(fitting, " or "));
+  const std::string where = titration.written.where("method", titration.where);
   const Method* known = method(titration.method);
   if (!known) {
     std::vector<std::string> ids;
     for (const Method& m : methods()) ids.push_back(m.id);
-    return Problem{Fault::bad_input, titration.where,
-                   fmt::format("there is no titration '{}'", titration.method), "",
+    return Problem{Fault::bad_input, where, fmt::format("there is no titration \"{}\"", titration.method),
+                   "a titration of " + quantity.id,
                    nearest(titration.method, ids) ? did_you_mean(titration.method, ids) : mend};
   }
   if (known->analyte != quantity.id)
-    return Problem{Fault::bad_input, titration.where,
-                   fmt::format("{} does not find {}", known->id, quantity.id),
+    return Problem{Fault::bad_input, where, fmt::format("{} does not find {}", known->id, quantity.id),
                    "a titration of " + quantity.id, mend};
   return known;
 }

@@ -47,8 +47,8 @@ std::vector<Suspect> density_misfit(const Analysis& analysis) {
   if (std::abs(off) <= allowed) return {};
   return {{"density",
            fmt::format("the hydrometer shows {}, {:.1f} % {} the {} that follow from the levels at {}",
-                       show(*analysis.density_measured), 100 * std::abs(off), off > 0 ? "above" : "below",
-                       show(analysis.density_predicted), show(analysis.temperature)),
+                       analysis.density_read, 100 * std::abs(off), off > 0 ? "above" : "below",
+                       show(analysis.density_predicted), show(analysis.temperature, "degC", 3)),
            "Check the temperature it was read at; else a titration is wrong, or something nobody titrates is "
            "in the tank."}};
 }

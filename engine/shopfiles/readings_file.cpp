@@ -32,6 +32,14 @@ std::string read_sampled(Table& root) {
   return moment;
 }
 
+/// Those of `keys` that are there.
+analysis::AsWritten as_written(const Table& table, std::initializer_list<const char*> keys) {
+  analysis::AsWritten written;
+  for (const char* key : keys)
+    if (table.has(key)) written[key] = {table.written(key), table.where(key)};
+  return written;
+}
+
 Titration read_titration(Table& entry) {
   Titration t;
   t.where = entry.where("quantity");
@@ -46,6 +54,7 @@ Titration read_titration(Table& entry) {
       entry.quantity({"burette", required, R"("23.80 mL")"}, units::read_volume).value_or(units::Litres{});
   const auto blank = entry.quantity({"blank", optional, R"("0.05 mL")"}, units::read_volume);
   t.blank = blank.value_or(units::Litres{});
+  t.written = as_written(entry, {"quantity", "method", "sample", "titrant", "factor", "burette", "blank"});
   if (t.blank > t.burette) {
     entry.report("blank", "is more than the burette reading", "the titrant used without a sample",
                  "Are the two readings interchanged?");
@@ -86,6 +95,7 @@ Result<Readings> read_readings_text(std::string_view name, std::string_view text
   readings.temperature = root.quantity({"temperature", optional, R"("54 degC")"}, units::read_temperature);
   readings.pH = root.number({"pH", optional, "4.1"}, possible_pH);
   readings.density = root.positive({"density", optional, R"("28 degBe")"}, units::read_density);
+  readings.written = as_written(root, {"level_below_mark", "density"});
   for (Table& entry : root.tables({"titration", optional, "[[titration]]"})) {
     readings.titrations.push_back(read_titration(entry));
   }

@@ -55,6 +55,11 @@ std::string Table::where(std::string_view name) const {
   return at_line(document_->name_, line(name)) + ": " + path_ + printable(name);
 }
 
+std::string Table::written(std::string_view name) const {
+  const Node* item = find(name);
+  return item && item->kind == Node::Kind::text ? item->text : "";
+}
+
 void Table::report(std::string_view name, std::string what, std::string expected, std::string try_this) {
   report(name, {{Fault::bad_input, where(name), std::move(what), std::move(expected), std::move(try_this)}});
 }

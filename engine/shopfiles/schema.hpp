@@ -65,6 +65,8 @@ class Table {
 
   /// "baths/n-07.toml:14: vessel.freeboard"; the table's own line where it has no such key.
   [[nodiscard]] std::string where(std::string_view name) const;
+  /// A text as it stands; empty for what is no text.
+  [[nodiscard]] std::string written(std::string_view name) const;
   void report(std::string_view name, std::string what, std::string expected, std::string try_this = {});
   void report(std::string_view name, const Problems& problems);
 

@@ -1,5 +1,3 @@
-#include <algorithm>
-#include <array>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/matter/formula.hpp>
@@ -12,39 +10,46 @@
 namespace bathwright::shopfiles {
 namespace {
 
-const std::array<std::string, 4> models{"auto", "davies", "debye-huckel", "pitzer"};
+using solution::MayForm;
 
-std::string read_model(Table& root) {
+/// Nothing for "auto".
+std::optional<activity::ModelKind> read_model(Table& root) {
+  constexpr std::string_view automatic = "auto", expected = R"("auto", "davies", "debye-huckel" or "pitzer")";
   const std::string model = root.text({"model", optional, R"("auto")"});
-  if (model.empty()) return models.front();
+  if (model.empty() || model == automatic) return std::nullopt;
+  std::vector<std::string> names{std::string(automatic)};
+  for (const auto kind :
+       {activity::ModelKind::davies, activity::ModelKind::debye_huckel, activity::ModelKind::pitzer}) {
+    names.emplace_back(activity::name(kind));
+    if (model == names.back()) return kind;
+  }
   if (model == "sit") {
-    root.report("model", "\"sit\" is not in this version", R"("auto", "davies", "debye-huckel" or "pitzer")",
+    root.report("model", "\"sit\" is not in this version", std::string(expected),
                 R"("auto" takes the best that the data allow.)");
-  } else if (std::ranges::find(models, model) == models.end()) {
-    const auto meant = nearest(model, models);
-    root.report("model", '"' + printable(model) + "\" is not a model",
-                R"("auto", "davies", "debye-huckel" or "pitzer")",
+  } else {
+    const auto meant = nearest(model, names);
+    root.report("model", '"' + printable(model) + "\" is not a model", std::string(expected),
                 meant ? "Did you mean " + *meant + '?' : "");
   }
-  return model;
+  return std::nullopt;
 }
 
 /// A held pH and the ion that balances its charge: both or neither.
-void read_held_pH(Table& root, SolutionFile& solution) {
-  solution.pH = root.number({"pH", optional, "4.0"}, possible_pH);
-  solution.counter_ion = root.text({"counter_ion", root.has("pH") ? required : optional, R"("Cl^-")"});
-  if (solution.counter_ion.empty()) return;
+void read_held_pH(Table& root, solution::Recipe& recipe) {
+  recipe.pH = root.number({"pH", optional, "4.0"}, possible_pH);
+  recipe.counter_ion = root.text({"counter_ion", root.has("pH") ? required : optional, R"("Cl^-")"});
+  if (recipe.counter_ion.empty()) return;
   if (!root.has("pH")) {
     root.report("counter_ion", "balances nothing without a pH", "a pH beside it",
                 "Add pH, or remove counter_ion.");
   }
-  const auto ion = matter::Formula::parse(solution.counter_ion, root.where("counter_ion"));
+  const auto ion = matter::Formula::parse(recipe.counter_ion, root.where("counter_ion"));
   if (!ion) {
     root.report("counter_ion", ion.problems());
   } else if (ion->charge() == 0) {
-    root.report("counter_ion", solution.counter_ion + " carries no charge", R"(an ion, as "Cl^-" or "Na^+")");
-  } else if (solution.counter_ion == "H^+" || solution.counter_ion == "OH^-") {
-    root.report("counter_ion", solution.counter_ion + " is already set by the pH",
+    root.report("counter_ion", recipe.counter_ion + " carries no charge", R"(an ion, as "Cl^-" or "Na^+")");
+  } else if (recipe.counter_ion == "H^+" || recipe.counter_ion == "OH^-") {
+    root.report("counter_ion", recipe.counter_ion + " is already set by the pH",
                 R"(an ion, as "Cl^-" or "Na^+")");
   }
 }
@@ -63,15 +68,16 @@ std::optional<matter::Formula> neutral_key(Table& table, const std::string& key)
   return std::nullopt;
 }
 
-void read_per_kg_water(Table& table, SolutionFile& solution) {
+void read_per_kg_water(Table& table, solution::Recipe& recipe) {
   for (const std::string& key : table.names()) {
     const auto formula = neutral_key(table, key);
     const auto molality = table.number({key, required, "1.0"}, possible_molality);
-    if (formula && molality) solution.ingredients.push_back({key, *molality, false, table.where(key)});
+    if (formula && molality) recipe.ingredients.push_back({key, *molality, table.where(key)});
   }
 }
 
-void read_per_litre(Table& table, SolutionFile& solution) {
+void read_per_litre(Table& table, solution::Recipe& recipe) {
+  recipe.per_litre = true;
   for (const std::string& key : table.names()) {
     const auto formula = neutral_key(table, key);
     const auto written = table.quantity({key, required, R"("270 g/L")"}, units::read_concentration);
@@ -79,70 +85,70 @@ void read_per_litre(Table& table, SolutionFile& solution) {
     const auto molarity =
         matter::moles_per_litre(*written, {.molar_mass = formula->molar_mass()}, table.where(key));
     if (molarity) {
-      solution.ingredients.push_back({key, molarity->v, true, table.where(key)});
+      recipe.ingredients.push_back({key, molarity->v, table.where(key)});
     } else {
       table.report(key, molarity.problems());
     }
   }
 }
 
-void read_ingredients(Table& root, SolutionFile& solution) {
+void read_ingredients(Table& root, solution::Recipe& recipe) {
   auto per_kg_water = root.table({"per_kg_water", optional, R"({ "NiSO4" = 1.0 })"});
   auto per_litre = root.table({"per_litre", optional, R"({ "NiSO4.6H2O" = "270 g/L" })"});
-  if (per_kg_water) read_per_kg_water(*per_kg_water, solution);
-  if (per_litre) read_per_litre(*per_litre, solution);
+  if (per_kg_water) read_per_kg_water(*per_kg_water, recipe);
+  if (per_litre) read_per_litre(*per_litre, recipe);
   if (per_kg_water && per_litre) {
     root.report("per_litre", "stands beside per_kg_water", "one of the two",
                 "Write all ingredients the same way.");
   }
 }
 
-void read_solids(Table& root, SolutionFile& solution) {
+void read_solids(Table& root, solution::Recipe& recipe) {
   auto solids = root.table({"solids", optional, R"({ allow = "all" })"});
   if (!solids) return;
   constexpr std::string_view example = R"("all", "none" or a list as ["H3BO3", "CaSO4.2H2O"])";
   const Node* allow = solids->any({"allow", optional, example});
   if (allow && allow->kind == Node::Kind::list) {
-    solution.solids_allowed = SolidsAllowed::listed;
-    solution.allowed = solids->texts({"allow", optional, example});
+    recipe.may_form = MayForm::listed;
+    recipe.allowed = solids->texts({"allow", optional, example});
   } else if (allow && allow->text == "none") {
-    solution.solids_allowed = SolidsAllowed::none;
+    recipe.may_form = MayForm::none;
   } else if (allow && allow->text != "all") {
     solids->report("allow", "is not an answer to which solids may precipitate", std::string(example));
   }
-  solution.excess = solids->texts({"excess", optional, R"(["CaSO4.2H2O"])"});
+  recipe.excess = solids->texts({"excess", optional, R"(["CaSO4.2H2O"])"});
 }
 
-void read_gases(Table& root, SolutionFile& solution) {
+void read_gases(Table& root, solution::Recipe& recipe) {
   auto gases = root.table({"gases", optional, R"({ "CO2" = 4.2e-4 })"});
   if (!gases) return;
   for (const std::string& key : gases->names()) {
     const auto formula = neutral_key(*gases, key);
     const auto pressure = gases->number({key, required, "4.2e-4"}, possible_pressure_atm);
-    if (formula && pressure) solution.gases_atm.emplace(key, *pressure);
+    if (formula && pressure) recipe.gases_atm.emplace(key, *pressure);
   }
 }
 
 }  // namespace
 
-Result<SolutionFile> read_solution_text(std::string_view name, std::string_view text) {
+Result<solution::Recipe> read_solution_text(std::string_view name, std::string_view text) {
   auto tree = parse_toml(name, text);
   if (!tree) return tree.problems();
   Document file(name, *std::move(tree));
   Table root = file.root();
-  SolutionFile solution;
-  solution.file = name;
-  solution.temperature = root.quantity({"temperature", required, R"("25 degC")"}, units::read_temperature)
-                             .value_or(units::Celsius{});
-  solution.model = read_model(root);
-  read_held_pH(root, solution);
-  read_ingredients(root, solution);
-  read_solids(root, solution);
-  read_gases(root, solution);
-  return file.conclude(std::move(solution));
+  solution::Recipe recipe;
+  recipe.file = name;
+  recipe.temperature = root.quantity({"temperature", required, R"("25 degC")"}, units::read_temperature)
+                           .value_or(units::Celsius{});
+  recipe.model = read_model(root);
+  read_held_pH(root, recipe);
+  read_ingredients(root, recipe);
+  read_solids(root, recipe);
+  read_gases(root, recipe);
+  return file.conclude(std::move(recipe));
 }
 
-Result<SolutionFile> read_solution(const std::string& path) {
+Result<solution::Recipe> read_solution(const std::string& path) {
   const auto text = read_text_file(path);
   if (!text) return text.problems();
   return read_solution_text(path, *text);

@@ -75,11 +75,11 @@ TEST_CASE("a refused analysis names the place and the mend", "[failure]") {
     void (*spoil)(analysis::Readings&);
   };
   const Row rows[] = {
-      {"morning.toml:7", "'Ni2+' is not a quantity of Watts nickel", "Did you mean Ni^2+?",
+      {"morning.toml:7", "\"Ni2+\" is not a quantity of Watts nickel", "Did you mean Ni^2+?",
        [](auto& r) { r.titrations[0].quantity = "Ni2+"; }},
-      {"morning.toml:7", "there is no titration 'edta-nikel'", "Did you mean edta-nickel?",
+      {"morning.toml:7", "there is no titration \"edta-nikel\"", "Did you mean edta-nickel?",
        [](auto& r) { r.titrations[0].method = "edta-nikel"; }},
-      {"morning.toml:7", "there is no titration 'weighing'", "Use edta-nickel.",
+      {"morning.toml:7", "there is no titration \"weighing\"", "Use edta-nickel.",
        [](auto& r) { r.titrations[0].method = "weighing"; }},
       {"morning.toml:7", "mohr-chloride does not find Ni^2+", "Use edta-nickel.",
        [](auto& r) { r.titrations[0].method = "mohr-chloride"; }},

@@ -172,6 +172,16 @@ TEST_CASE("a reading that cannot be is refused with the place and the mend", "[f
   }
 }
 
+TEST_CASE("a titration from a file names the key at fault, and shows its figures as written", "[unit]") {
+  Titration t = read("edta-nickel", 2, 0.1012, 238);
+  t.written["burette"] = {"238 mL", "bench.toml:12: titration.burette"};
+  CHECK(refusal(t).where == "bench.toml:12: titration.burette");
+  t.burette = {23.8e-3};
+  t.written["burette"].text = "23.8 mL";
+  t.written["sample"].text = "2.00 mL";
+  CHECK(worked(t).how == "23.8 mL of 0.1012 mol/L EDTA on 2.00 mL");
+}
+
 TEST_CASE("every fault of one titration is named at once", "[failure]") {
   Titration t = read("edta-nickel", 0, 0, 0);
   const auto result = work_out(t, *method("edta-nickel"), molar_mass("Ni^2+"));

@@ -28,13 +28,14 @@ struct Suspect {
 
 struct Analysis {
   units::Litres volume;
-  std::string volume_from;  ///< "2400 L at the mark, 0.3000 dm low on 200.0 dm2"
+  std::string volume_from;  ///< "2400 L at the mark, 3 cm low on 200 dm2"
   units::Celsius temperature;
   double pH = 0;
   std::vector<LevelFound> results;  ///< components, salt views, counter-ion; nothing that counts H^+
   bath::TankState state;
   units::KilogramsPerLitre density_predicted;
   std::optional<units::KilogramsPerLitre> density_measured;
+  std::string density_read;  ///< the hydrometer reading as it was written: "28 degBe"
   std::vector<Suspect> suspects;
   std::vector<std::string>
       notes;  ///< assumptions made: temperature from the tank file, pH from the book, ...

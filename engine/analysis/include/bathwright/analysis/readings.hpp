@@ -4,11 +4,31 @@
 
 #include <bathwright/units/concentration.hpp>
 #include <bathwright/units/quantity.hpp>
+#include <map>
 #include <optional>
 #include <string>
+#include <string_view>
 #include <vector>
 
 namespace bathwright::analysis {
+
+/// A key of a file as a person wrote it: "23.80 mL" at "morning.toml:12: titration.burette".
+struct Written {
+  std::string text, where;
+};
+
+/// By key. Empty where the figures were not read from a file.
+struct AsWritten : std::map<std::string, Written, std::less<>> {
+  /// The text of `key`, or else what stands for it.
+  [[nodiscard]] std::string text(std::string_view key, const std::string& otherwise) const {
+    const auto found = find(key);
+    return found == end() ? otherwise : found->second.text;
+  }
+  [[nodiscard]] std::string where(std::string_view key, const std::string& otherwise) const {
+    const auto found = find(key);
+    return found == end() ? otherwise : found->second.where;
+  }
+};
 
 /// One titration as it was read.
 struct Titration {
@@ -20,6 +40,7 @@ struct Titration {
   units::Litres burette;         ///< read at the end point
   units::Litres blank;           ///< used without sample
   std::string where;             ///< file:line, for messages
+  AsWritten written{};           ///< quantity, method, sample, titrant, factor, burette, blank
 };
 
 /// A concentration found by other means.
@@ -40,6 +61,7 @@ struct Readings {
   std::optional<units::KilogramsPerLitre> density;  ///< hydrometer
   std::vector<Titration> titrations;
   std::vector<Found> found;
+  AsWritten written{};  ///< level_below_mark, density
 };
 
 }  // namespace bathwright::analysis

@@ -31,7 +31,7 @@ struct Titrated {
 /// tolerance: class A, triangular; of the smallest burette that holds the reading and the smallest pipette
 /// that holds the sample (data/analysis/glassware.csv).
 ///   molar_mass  of the method's analyte
-/// Fails, naming `titration.where`, on readings that are not positive, a blank not below the reading, and a
+/// Fails, naming the key at fault, on readings that are not positive, a blank not below the reading, and a
 /// reading or sample no class A glass of the table holds.
 /// Source: first-order propagation, JCGM 100:2008 (GUM) 5.1.2; triangular 4.3.9.
 Result<Titrated> work_out(const Titration& titration, const Method& method, units::GramsPerMole molar_mass);
