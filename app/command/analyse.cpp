@@ -11,15 +11,16 @@ namespace {
 int run(const Context& context, const std::string& tank_path, const std::string& readings_path) {
   const auto shop = open_shop(context, tank_path);
   if (!shop) return fail(context, shop.problems());
-  const auto analysis = analyse(context, *shop, readings_path);
-  if (!analysis) return fail(context, analysis.problems());
-  Json doc = analysis_document(shop->tank, shop->type(), *analysis);
-  sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), *analysis);
+  const auto analysed = analyse(context, *shop, readings_path);
+  if (!analysed) return fail(context, analysed.problems());
+  const analysis::Analysis& analysis = analysed->analysis;
+  Json doc = analysis_document(shop->tank, shop->type(), analysis);
+  sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), analysis);
   if (!context.log_file.empty()) {
     logbook::NewEntry entry;
     entry.kind = logbook::EntryKind::analysis;
     entry.tank = shop->tank.name;
-    entry.body = doc.dump();
+    entry.body = text_of(doc);
     const auto logged = append_to_log(context, std::move(entry));
     if (!logged) return fail(context, logged.problems());
     doc["logged_as"] = logged->entry.seq;
@@ -29,8 +30,8 @@ int run(const Context& context, const std::string& tank_path, const std::string&
     print(doc);
   else
     print(lines);
-  const bool in_window = all_in_window(sheets::judge(shop->tank, shop->type(), *analysis));
-  return in_window && analysis->suspects.empty() ? Exit::all_well : Exit::finding;
+  const bool in_window = all_in_window(sheets::judge(shop->tank, shop->type(), analysis));
+  return in_window && analysis.suspects.empty() ? Exit::all_well : Exit::finding;
 }
 
 }  // namespace

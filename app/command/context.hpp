@@ -32,6 +32,9 @@ struct Context {
 /// The head of every document: program, version, warnings.
 [[nodiscard]] Json document(const std::vector<std::string>& warnings);
 
+/// A document as text: on one line, or indented. No zero carries a sign, and what is no UTF-8 is replaced.
+[[nodiscard]] std::string text_of(Json document, int indent = -1);
+
 void print(const sheets::Lines& lines);
 void print(const Json& document);
 

@@ -1,5 +1,6 @@
 // bathwright dose TANK READINGS: the addition sheet.
 #include <bathwright/sheets/addition_sheet.hpp>
+#include <bathwright/sheets/analysis_sheet.hpp>
 
 #include "context.hpp"
 #include "tank_state.hpp"
@@ -50,8 +51,11 @@ Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
           {"unmet", plan.unmet}};
 }
 
-Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet) {
-  Json doc = document(sheet.now.warnings);
+Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet,
+             const std::vector<std::string>& changed_since) {
+  std::vector<std::string> warnings = changed_since;
+  warnings.insert(warnings.end(), sheet.now.warnings.begin(), sheet.now.warnings.end());
+  Json doc = document(warnings);
   doc["tank"] = shop.tank.name;
   doc["currency"] = shop.tank.currency;
   doc["plans"] = Json::array();
@@ -68,41 +72,57 @@ Result<Logged> log_entry(const Context& context, const Shop& shop, logbook::Entr
   logbook::NewEntry entry;
   entry.kind = kind;
   entry.tank = shop.tank.name;
-  entry.body = body.dump();
+  entry.body = text_of(body);
   return append_to_log(context, std::move(entry));
+}
+
+/// Logs the analysis, unless it is the last in the log, and the plan made from it; says so on both pages.
+Outcome log_both(const Context& context, const Shop& shop, const Analysed& analysed, Json& doc,
+                 sheets::Lines& lines) {
+  std::int64_t analysis_seq = 0;
+  if (analysed.logged_as) {
+    analysis_seq = *analysed.logged_as;
+    sheets::say(lines, "The analysis is already logged as entry " + std::to_string(analysis_seq) + ".");
+  } else {
+    const auto logged = log_entry(context, shop, logbook::EntryKind::analysis,
+                                  analysis_document(shop.tank, shop.type(), analysed.analysis));
+    if (!logged) return logged.problems();
+    analysis_seq = logged->entry.seq;
+    sheets::say(lines, words(*logged));
+  }
+  const auto planned = log_entry(context, shop, logbook::EntryKind::plan, doc);
+  if (!planned) return planned.problems();
+  doc["logged_as"] = {analysis_seq, planned->entry.seq};
+  sheets::say(lines, words(*planned));
+  return Done{};
 }
 
 int run(const Context& context, const std::string& tank_path, const std::string& readings_path) {
   const auto shop = open_shop(context, tank_path);
   if (!shop) return fail(context, shop.problems());
-  const auto analysis = analyse(context, *shop, readings_path);
-  if (!analysis) return fail(context, analysis.problems());
+  const auto analysed = analyse(context, *shop, readings_path);
+  if (!analysed) return fail(context, analysed.problems());
+  const analysis::Analysis& analysis = analysed->analysis;
   std::map<std::string, double> uncertainty;
-  for (const auto& level : analysis->results) uncertainty[level.quantity] = level.standard_uncertainty.v;
-  const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis->state, uncertainty);
+  for (const auto& level : analysis.results) uncertainty[level.quantity] = level.standard_uncertainty.v;
+  const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, uncertainty);
   if (!sheet) return fail(context, sheet.problems());
 
-  Json doc = json_of(*shop, *sheet);
-  sheets::Lines lines = sheets::addition_sheet(shop->tank, shop->type(), *analysis, *sheet,
-                                               {signer(context), context.shift, program_and_version()});
-  if (!context.log_file.empty()) {
-    const auto analysed = log_entry(context, *shop, logbook::EntryKind::analysis,
-                                    analysis_document(shop->tank, shop->type(), *analysis));
-    if (!analysed) return fail(context, analysed.problems());
-    const auto planned = log_entry(context, *shop, logbook::EntryKind::plan, doc);
-    if (!planned) return fail(context, planned.problems());
-    doc["logged_as"] = {analysed->entry.seq, planned->entry.seq};
-    sheets::say(lines, words(*analysed));
-    sheets::say(lines, words(*planned));
-  }
+  Json doc = json_of(*shop, *sheet, analysed->changed_since);
+  sheets::Lines lines =
+      sheets::addition_sheet(shop->tank, shop->type(), analysis, *sheet, analysed->changed_since,
+                             {signer(context), context.shift, program_and_version()});
+  if (!context.log_file.empty())
+    if (Outcome logged = log_both(context, *shop, *analysed, doc, lines); !logged)
+      return fail(context, logged.problems());
   if (context.json)
     print(doc);
   else
     print(lines);
   const bool nothing_to_do = !sheet->plans.empty() && sheet->plans.front().feasible &&
-                             sheet->plans.front().additions.empty() && analysis->suspects.empty();
-  return nothing_to_do && all_in_window(sheets::judge(shop->tank, shop->type(), sheet->now.quantity_g_per_L,
-                                                      sheet->now.pH))
+                             sheet->plans.front().additions.empty() && analysis.suspects.empty();
+  return nothing_to_do && analysed->changed_since.empty() &&
+                 all_in_window(sheets::judge(shop->tank, shop->type(), analysis))
              ? Exit::all_well
              : Exit::finding;
 }
@@ -121,7 +141,7 @@ void add_dose(CLI::App& program, Context& context, Action& action) {
   add_signature(*verb, context);
   verb->footer(
       "Example: bathwright dose baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
-      "With --log the analysis and the plan are logged.\n");
+      "With --log the analysis and the plan are logged; additions logged since are told.\n");
   verb->callback([&context, &action, tank, readings] {
     action = [&context, tank, readings] { return run(context, *tank, *readings); };
   });

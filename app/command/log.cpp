@@ -1,5 +1,6 @@
 // bathwright log add | list | show | verify | correct: the shift log.
 #include <bathwright/sheets/log_sheet.hpp>
+#include <set>
 
 #include "context.hpp"
 #include "log_access.hpp"
@@ -7,7 +8,14 @@
 namespace bathwright::command {
 namespace {
 
-Json json_of(const logbook::Entry& entry) {
+/// The numbers of an entry's corrections.
+std::vector<std::int64_t> corrections_of(const logbook::Entry& entry,
+                                         const sheets::Corrections& corrected_by) {
+  const auto found = corrected_by.find(entry.seq);
+  return found == corrected_by.end() ? std::vector<std::int64_t>{} : found->second;
+}
+
+Json json_of(const logbook::Entry& entry, const sheets::Corrections& corrected_by) {
   Json body = Json::parse(entry.body, nullptr, false);
   return {{"seq", entry.seq},
           {"kind", logbook::name(entry.kind)},
@@ -18,9 +26,21 @@ Json json_of(const logbook::Entry& entry) {
           {"station", entry.station},
           {"program", entry.program},
           {"corrects", entry.corrects ? Json(*entry.corrects) : Json(nullptr)},
+          {"corrected_by", corrections_of(entry, corrected_by)},
           {"body", body.is_discarded() ? Json(entry.body) : body},
           {"hash", entry.hash},
           {"previous", entry.previous}};
+}
+
+Result<sheets::Corrections> corrections(const logbook::Logbook& log) {
+  logbook::Filter filter;
+  filter.kind = logbook::EntryKind::correction;
+  const auto entries = log.list(filter);
+  if (!entries) return entries.problems();
+  sheets::Corrections corrected_by;
+  for (const auto& entry : *entries)
+    if (entry.corrects) corrected_by[*entry.corrects].push_back(entry.seq);
+  return corrected_by;
 }
 
 struct ListOptions {
@@ -40,13 +60,15 @@ int list(const Context& context, const ListOptions& options) {
   if (!log) return fail(context, log.problems());
   const auto entries = log->list(filter);
   if (!entries) return fail(context, entries.problems());
+  const auto corrected_by = corrections(*log);
+  if (!corrected_by) return fail(context, corrected_by.problems());
   if (context.json) {
     Json doc = document({});
     doc["entries"] = Json::array();
-    for (const auto& entry : *entries) doc["entries"].push_back(json_of(entry));
+    for (const auto& entry : *entries) doc["entries"].push_back(json_of(entry, *corrected_by));
     print(doc);
   } else {
-    print(sheets::log_list(*entries));
+    print(sheets::log_list(*entries, *corrected_by));
   }
   return Exit::all_well;
 }
@@ -56,12 +78,16 @@ int show(const Context& context, std::int64_t seq) {
   if (!log) return fail(context, log.problems());
   const auto entry = log->find(seq);
   if (!entry) return fail(context, entry.problems());
+  const auto corrected_by = corrections(*log);
+  if (!corrected_by) return fail(context, corrected_by.problems());
   if (context.json) {
     Json doc = document({});
-    doc["entry"] = json_of(*entry);
+    doc["entry"] = json_of(*entry, *corrected_by);
     print(doc);
   } else {
-    print(sheets::log_entry(*entry));
+    constexpr int indent = 2;
+    const Json body = Json::parse(entry->body, nullptr, false);
+    print(sheets::log_entry(*entry, body.is_discarded() ? entry->body : text_of(body, indent)));
   }
   return Exit::all_well;
 }
@@ -87,17 +113,38 @@ int verify(const Context& context) {
   return result.ok ? Exit::all_well : Exit::finding;
 }
 
+/// Nothing where the log has entries of this tank; else a note that it has none, and which tanks it has.
+Result<std::vector<std::string>> note_of_new_tank(const Context& context, const std::string& tank) {
+  std::error_code failure;
+  std::set<std::string> tanks;
+  if (std::filesystem::exists(log_path(context), failure)) {
+    const auto log = open_log_to_read(context);
+    if (!log) return log.problems();
+    const auto entries = log->list();
+    if (!entries) return entries.problems();
+    for (const auto& entry : *entries) tanks.insert(entry.tank);
+  }
+  if (tanks.contains(tank)) return std::vector<std::string>{};
+  std::string note = "This is the first entry of a tank \"" + tank + "\".";
+  for (const std::string& known : tanks)
+    note += (known == *tanks.begin() ? " The log has " : ", ") + ('"' + known + '"');
+  return std::vector<std::string>{note + (tanks.empty() ? "" : ".")};
+}
+
 int append(const Context& context, logbook::NewEntry entry) {
+  const auto notes = note_of_new_tank(context, entry.tank);
+  if (!notes) return fail(context, notes.problems());
   const auto logged = append_to_log(context, std::move(entry));
   if (!logged) return fail(context, logged.problems());
   if (context.json) {
-    Json doc = document({});
-    doc["entry"] = json_of(logged->entry);
+    Json doc = document(*notes);
+    doc["entry"] = json_of(logged->entry, {});
     doc["log"] = logged->path.string();
     print(doc);
   } else {
     sheets::Lines lines;
     sheets::say(lines, words(*logged));
+    for (const std::string& note : *notes) sheets::say(lines, "Note: " + note, 2);
     print(lines);
   }
   return Exit::all_well;
@@ -142,9 +189,10 @@ void add_log(CLI::App& program, Context& context, Action& action) {
   auto* verb = program.add_subcommand("log", "the shift log")->require_subcommand(1)->fallthrough();
   verb->footer(
       "Examples:\n"
-      "  bathwright log add addition --tank N-07 --note \"12 kg boric acid, lot 4711\" --by \"M. Okafor\"\n"
-      "  bathwright log list --tank N-07\n"
+      "  bathwright log add addition --tank \"N-07 Watts nickel\" --note \"12 kg boric acid\" --by \"M. Okafor\"\n"
+      "  bathwright log list --tank \"N-07 Watts nickel\"\n"
       "  bathwright log verify\n"
+      "--tank takes the name that stands in the tank's file.\n"
       "Without --log the log is shift-log.sqlite in the user's data folder.\n");
 
   auto* list_verb = verb->add_subcommand("list", "the entries, oldest first")->fallthrough();

@@ -37,6 +37,10 @@ std::string signer(const Context& context) {
 }
 
 Result<logbook::Logbook> open_log_to_read(const Context& context) {
+  std::error_code failure;
+  if (!fs::exists(log_path(context), failure) && !failure)
+    return Problem{Fault::bad_input, log_path(context).string(), "no log is here", "the file of a shift log",
+                   "Name one with --log FILE, or write the first entry with bathwright log add."};
   return logbook::Logbook::open(log_path(context), logbook::OpenMode::read_only, wall_clock());
 }
 
@@ -66,6 +70,44 @@ std::string words(const Logged& logged) {
          std::to_string(logged.entry.seq) + " by " + logged.entry.by + " in " + logged.path.string() + ".";
 }
 
+namespace {
+
+/// "entry 4 (addition)", "entries 4, 5 (additions)"; "" where there is none.
+Result<std::string> entries_after(const logbook::Logbook& log, const logbook::Entry& analysis,
+                                  logbook::EntryKind kind) {
+  logbook::Filter filter;
+  filter.tank = analysis.tank;
+  filter.kind = kind;
+  filter.after_seq = analysis.seq;
+  const auto entries = log.list(filter);
+  if (!entries) return entries.problems();
+  if (entries->empty()) return std::string();
+  const bool one = entries->size() == 1;
+  std::string text = one ? "entry " : "entries ";
+  for (const auto& entry : *entries)
+    text += (entry.seq == entries->front().seq ? "" : ", ") + std::to_string(entry.seq);
+  return text + " (" + std::string(logbook::name(kind)) + (one ? ")" : "s)");
+}
+
+Result<std::vector<std::string>> changes_after(const logbook::Logbook& log, const logbook::Entry& analysis) {
+  std::vector<std::string> changes;
+  for (const auto kind : {logbook::EntryKind::addition, logbook::EntryKind::dump}) {
+    const auto entries = entries_after(log, analysis, kind);
+    if (!entries) return entries.problems();
+    if (!entries->empty())
+      changes.push_back(*entries + (entries->starts_with("entry ") ? " is" : " are") +
+                        " not in these readings.");
+  }
+  const auto plans = entries_after(log, analysis, logbook::EntryKind::plan);
+  if (!plans) return plans.problems();
+  if (!plans->empty())
+    changes.push_back(*plans + (plans->starts_with("entry ") ? " was" : " were") +
+                      " made from these readings: what was added by it is not in them.");
+  return changes;
+}
+
+}  // namespace
+
 Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const std::string& tank) {
   std::error_code failure;
   if (context.log_file.empty() || !fs::exists(log_path(context), failure))
@@ -76,7 +118,7 @@ Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const 
   if (!entry) return entry.problems();
   if (!*entry) return std::optional<LastAnalysis>{};
   const std::string place = "log entry " + std::to_string((*entry)->seq);
-  const Json body = Json::parse((*entry)->body, nullptr, false);
+  Json body = Json::parse((*entry)->body, nullptr, false);
   const auto number = [&](const char* key) -> std::optional<double> {
     if (!body.is_object() || !body.contains(key) || !body[key].is_number()) return std::nullopt;
     return body[key].get<double>();
@@ -96,6 +138,11 @@ Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const 
   last.volume = {*volume_L};
   last.temperature = {*temperature_C};
   last.book.from = place + ", " + (*entry)->at;
+  last.seq = (*entry)->seq;
+  last.document = std::move(body);
+  auto changes = changes_after(*log, **entry);
+  if (!changes) return changes.problems();
+  last.changed_since = *std::move(changes);
   return std::optional<LastAnalysis>{std::move(last)};
 }
 

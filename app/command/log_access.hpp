@@ -16,7 +16,7 @@ namespace bathwright::command {
 /// Who signs: --by, else the user of the computer, else "unsigned".
 [[nodiscard]] std::string signer(const Context& context);
 
-/// Opens for reading; a log that does not exist is a problem.
+/// Opens for reading; a log that does not exist is bad input.
 Result<logbook::Logbook> open_log_to_read(const Context& context);
 
 /// The log with one entry more, signed with the context's name and shift. Makes the log, and the data folder
@@ -31,11 +31,14 @@ Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry);
 /// "Logged as entry 12 in shift-log.sqlite."
 [[nodiscard]] std::string words(const Logged& logged);
 
-/// An entry, and what it says, as far as it is an analysis.
+/// An analysis of the log, and what the log has of its tank after it.
 struct LastAnalysis {
+  std::int64_t seq = 0;
+  Json document;
   analysis::Book book;
   units::Litres volume;
   units::Celsius temperature;
+  std::vector<std::string> changed_since;  ///< additions, dumps and plans, a sentence for each kind
 };
 
 /// The last analysis of the tank in --log; nothing without --log, without a file there or without an analysis

@@ -11,18 +11,20 @@ namespace bathwright::command {
 namespace {
 
 struct Portion {
-  std::string chemical;
+  sheets::PathAddition addition;
   double kg = 0;
   bath::Brings brings;
 };
 
+bool is_amount(const std::string& text) { return units::read_mass(text, "") || units::read_volume(text, ""); }
+
 /// "12 kg nickel-sulfate" or "2 L sulfuric-acid", of a chemical on the tank's shelf or in the catalogue.
 Result<Portion> read_portion(const std::string& text, const Shop& shop) {
-  const std::string where = "--add \"" + text + "\"";
+  const std::string where = "--add \"" + text + "\"", example = "\"12 kg nickel-sulfate\"";
+  if (is_amount(text)) return Problem{Fault::bad_input, where, "the chemical is missing", example, ""};
   const std::size_t last_space = text.find_last_of(' ');
   if (last_space == std::string::npos)
-    return Problem{Fault::bad_input, where, "an amount or a chemical is missing", "\"12 kg nickel-sulfate\"",
-                   ""};
+    return Problem{Fault::bad_input, where, "the amount is missing", example, ""};
   const std::string amount = text.substr(0, last_space), id = text.substr(last_space + 1);
   const auto& catalogue = matter::StockCatalogue::built_in();
   const bath::ShelfItem* item = shop.tank.on_shelf(id);
@@ -34,51 +36,62 @@ Result<Portion> read_portion(const std::string& text, const Shop& shop) {
   }
   auto brings = shop.chemistry.brings(*stock);
   if (!brings) return brings.problems();
-  const auto mass = units::read_mass(amount, where);
-  if (mass) return Portion{id, mass->v, *std::move(brings)};
   const auto volume = units::read_volume(amount, where);
-  if (!stock->liquid || !volume) return mass.problems();
-  return Portion{id, volume->v * stock->kg_per_L, *std::move(brings)};
+  if (volume && !stock->liquid)
+    return Problem{Fault::bad_input, where, id + " is a solid, and is not measured in litres",
+                   "a mass, as \"4 kg " + id + "\"", ""};
+  if (volume)
+    return Portion{
+        {id, stock->name, volume->v, "L", amount}, volume->v * stock->kg_per_L, *std::move(brings)};
+  const auto mass = units::read_mass(amount, where);
+  if (!mass) return mass.problems();
+  return Portion{{id, stock->name, mass->v, "kg", amount}, mass->v, *std::move(brings)};
 }
 
 Result<std::vector<sheets::PathPoint>> walk(const Shop& shop, bath::TankState state,
                                             const std::vector<Portion>& portions, int steps) {
   std::vector<sheets::PathPoint> points;
-  double total_kg = 0;
-  const auto stop_here = [&](const std::string& chemical, double added_kg) -> Outcome {
+  sheets::PathPoint here;
+  const auto stop_here = [&]() -> Outcome {
     auto view = shop.chemistry.quick_view(state);
     if (!view) return view.problems();
-    points.push_back({chemical, added_kg, total_kg, *std::move(view)});
+    here.view = *std::move(view);
+    points.push_back(here);
     return Done{};
   };
-  if (Outcome ok = stop_here("", 0); !ok) return ok.problems();
-  for (const Portion& portion : portions) {
-    const double step_kg = portion.kg / steps;
+  if (Outcome ok = stop_here(); !ok) return ok.problems();
+  for (std::size_t i = 0; i < portions.size(); ++i) {
+    here.addition = i;
+    const double step_kg = portions[i].kg / steps;
     for (int step = 1; step <= steps; ++step) {
-      state = bath::Chemistry::after(std::move(state), portion.brings, step_kg);
-      total_kg += step_kg;
-      if (Outcome ok = stop_here(portion.chemical, step * step_kg); !ok) return ok.problems();
+      state = bath::Chemistry::after(std::move(state), portions[i].brings, step_kg);
+      here.added = portions[i].addition.amount * step / steps;
+      here.total_kg += step_kg;
+      if (Outcome ok = stop_here(); !ok) return ok.problems();
     }
   }
   return points;
 }
 
-Json json_of(const Shop& shop, const std::vector<sheets::PathPoint>& points, const std::string& from) {
-  Json doc = document({});
+Json json_of(const Shop& shop, const std::vector<sheets::PathAddition>& additions,
+             const std::vector<sheets::PathPoint>& points, const sheets::StateRead& start,
+             const std::vector<std::string>& findings) {
+  Json doc = document(start.changed_since);
   doc["tank"] = shop.tank.name;
-  doc["state_from"] = from;
+  doc["state_from"] = start.from;
   doc["headroom_unit"] =
       "log10 of the distance from saturation at the working temperature, positive below it";
   doc["points"] = Json::array();
   for (const auto& point : points)
     doc["points"].push_back({{"added", point.total_kg},
-                             {"chemical", point.chemical},
+                             {"chemical", point.addition ? additions[*point.addition].chemical : ""},
                              {"pH", point.view.pH},
                              {"log10_activity", log10_activities(point.view)},
                              {"free_molality", free_molalities(point.view)},
                              {"headroom", headroom_log10(point.view)},
                              {"concentrations", concentrations(shop.type(), point.view)},
                              {"volume_L", point.view.volume_L}});
+  doc["findings"] = findings;
   return doc;
 }
 
@@ -105,14 +118,14 @@ int run(const Context& context, const Options& options) {
   if (!start) return fail(context, start.problems());
   const auto points = walk(*shop, start->state, portions, options.steps);
   if (!points) return fail(context, points.problems());
+  std::vector<sheets::PathAddition> additions;
+  for (const Portion& portion : portions) additions.push_back(portion.addition);
+  const auto findings = sheets::path_findings(shop->tank, shop->type(), additions, *points);
   if (context.json)
-    print(json_of(*shop, *points, start->from));
+    print(json_of(*shop, additions, *points, start->read, findings));
   else
-    print(sheets::path_sheet(shop->tank, *points));
-  for (const auto& point : *points)
-    if (const auto nearest = sheets::nearest_solid(point.view); nearest && nearest->log10_room < 0)
-      return Exit::finding;
-  return Exit::all_well;
+    print(sheets::path_sheet(shop->tank, additions, *points, start->read.changed_since, findings));
+  return findings.empty() ? Exit::all_well : Exit::finding;
 }
 
 }  // namespace

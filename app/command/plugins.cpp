@@ -1,4 +1,5 @@
 // bathwright plugins list | show ID: which bath types there are, and what one says about itself.
+#include <bathwright/sheets/cautions.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
 
@@ -49,6 +50,7 @@ std::string window_text(const bath::Window& w) {
 sheets::Lines page_of(const bath::BathType& type) {
   sheets::Lines lines;
   sheets::title(lines, type.name, type.id + " " + type.version);
+  sheets::say(lines, sheets::deferral);
   sheets::say(lines, type.summary);
   sheets::say(lines, "Valid: " + type.validity);
   sheets::say(lines, "By " + type.author + ", licence " + type.licence);
@@ -67,8 +69,9 @@ sheets::Lines page_of(const bath::BathType& type) {
     sheets::say(lines, "  " + sheets::pretty(solid.name) + ": " + solid.sign_in_tank, 2);
   sheets::heading(lines, "Additions");
   for (const auto& rule : type.additions) sheets::say(lines, "  " + rule.supply + ": " + rule.how, 2);
-  sheets::heading(lines, "Cautions");
-  for (const auto& caution : type.cautions) sheets::say(lines, "  " + caution.text, 2);
+  std::vector<std::string> cautions;
+  for (const auto& caution : type.cautions) cautions.push_back(caution.text);
+  sheets::cautions(lines, cautions);
   sheets::heading(lines, "Sources");
   for (const auto& source : type.sources) sheets::say(lines, "  " + source.key + ": " + source.citation, 2);
   return lines;

@@ -2,6 +2,7 @@
 
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/plugin_host/discovery.hpp>
+#include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 
 namespace bathwright::command {
@@ -47,7 +48,12 @@ plugin_host::BathTypes known_bath_types(const Context& context) {
 
 Result<Shop> open_shop(const Context& context, const std::string& tank_path) {
   auto tank = shopfiles::read_tank(tank_path, matter::StockCatalogue::built_in());
-  if (!tank) return tank.problems();
+  if (!tank) {
+    if (shopfiles::read_readings(tank_path))
+      return Problem{Fault::bad_input, tank_path, "is a file of readings", "a tank file",
+                     "Give the tank first, then its readings."};
+    return tank.problems();
+  }
   const plugin_host::BathTypes types = known_bath_types(context);
   const bath::BathType* type = types.find(tank->bath_type);
   if (!type) return unknown_bath_type(*tank, types);

@@ -8,11 +8,14 @@
 namespace bathwright::command {
 namespace {
 
-Json json_of(const Shop& shop, const bath::TankView& view, const std::string& from) {
-  Json doc = document(view.warnings);
+Json json_of(const Shop& shop, const bath::TankView& view, const sheets::StateRead& read) {
+  std::vector<std::string> warnings = read.changed_since;
+  warnings.insert(warnings.end(), view.warnings.begin(), view.warnings.end());
+  Json doc = document(warnings);
   doc["tank"] = shop.tank.name;
   doc["bath_type"] = shop.tank.bath_type;
-  doc["state_from"] = from;
+  doc["state_from"] = read.from;
+  doc["read"] = {{"temperature_C", read.temperature.v}, {"pH", read.pH}};
   doc["temperature_C"] = shop.tank.temperature.v;
   doc["idle_temperature_C"] = shop.tank.idle_temperature.v;
   doc["volume_L"] = view.volume_L;
@@ -21,7 +24,7 @@ Json json_of(const Shop& shop, const bath::TankView& view, const std::string& fr
   doc["ionic_strength"] = view.ionic_strength;
   doc["water_activity"] = view.water_activity;
   doc["concentrations"] = concentrations(shop.type(), view);
-  doc["levels"] = level_list(sheets::judge(shop.tank, shop.type(), view.quantity_g_per_L, view.pH));
+  doc["levels"] = level_list(sheets::judge(shop.tank, shop.type(), view.quantity_g_per_L, read.pH));
   doc["species"] = Json::array();
   for (const auto& s : view.species)
     doc["species"].push_back({{"name", s.name},
@@ -57,13 +60,15 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   const auto view = shop->chemistry.view(start->state);
   if (!view) return fail(context, view.problems());
   if (context.json)
-    print(json_of(*shop, *view, start->from));
+    print(json_of(*shop, *view, start->read));
   else
-    print(sheets::tank_sheet(shop->tank, shop->type(), *view, start->from));
+    print(sheets::tank_sheet(shop->tank, shop->type(), *view, start->read));
   const bool in_window =
-      all_in_window(sheets::judge(shop->tank, shop->type(), view->quantity_g_per_L, view->pH));
-  return in_window && sheets::crystallising(shop->tank, view->headroom).empty() ? Exit::all_well
-                                                                                : Exit::finding;
+      all_in_window(sheets::judge(shop->tank, shop->type(), view->quantity_g_per_L, start->read.pH));
+  return in_window && start->read.changed_since.empty() &&
+                 sheets::crystallising(shop->tank, view->headroom).empty()
+             ? Exit::all_well
+             : Exit::finding;
 }
 
 }  // namespace

@@ -1,6 +1,9 @@
 #include "tank_state.hpp"
 
 #include <bathwright/shopfiles/readings_file.hpp>
+#include <bathwright/shopfiles/tank_file.hpp>
+
+#include "view_json.hpp"
 
 namespace bathwright::command {
 namespace {
@@ -12,36 +15,71 @@ Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
     const bath::Quantity* quantity = shop.type().quantity(id);
     if (quantity && !quantity->salt_view) g_per_L[id] = level;
   }
-  return shop.chemistry.state_from(g_per_L, *last.book.pH, last.volume, shop.tank.temperature);
+  return shop.chemistry.state_from(g_per_L, *last.book.pH, last.volume, last.temperature);
+}
+
+/// Whether two documents of `analyse` hold the same figures, whatever is said about them.
+bool same_figures(const Json& a, const Json& b) {
+  const auto figures = [](const Json& document) {
+    Json kept;
+    for (const char* key : {"volume_L", "temperature_C", "pH"}) kept[key] = document.value(key, Json());
+    for (const Json& result : document.at("results"))
+      kept["results"].push_back({result.value("quantity", Json()), result.value("value", Json())});
+    return kept;
+  };
+  return figures(a) == figures(b);
 }
 
 }  // namespace
 
-Result<analysis::Analysis> analyse(const Context& context, const Shop& shop,
-                                   const std::string& readings_path) {
+Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path) {
   const auto readings = shopfiles::read_readings(readings_path);
-  if (!readings) return readings.problems();
+  if (!readings) {
+    if (shopfiles::read_tank(readings_path, matter::StockCatalogue::built_in()))
+      return Problem{Fault::bad_input, readings_path, "is a tank file", "a file of readings",
+                     "Give the tank first, then its readings."};
+    return readings.problems();
+  }
   const auto last = last_analysis(context, shop.tank.name);
   if (!last) return last.problems();
   std::optional<analysis::Book> book;
   if (*last) book = (*last)->book;
-  return analysis::evaluate(*readings, shop.tank, shop.chemistry, book);
+  auto analysis = analysis::evaluate(*readings, shop.tank, shop.chemistry, book);
+  if (!analysis) return analysis.problems();
+  Analysed analysed{*std::move(analysis), std::nullopt, {}};
+  if (*last &&
+      same_figures(analysis_document(shop.tank, shop.type(), analysed.analysis), (*last)->document)) {
+    analysed.logged_as = (*last)->seq;
+    analysed.changed_since = (*last)->changed_since;
+  }
+  return analysed;
 }
 
 Result<StartingState> starting_state(const Context& context, const Shop& shop,
                                      const std::string& readings_path) {
   if (!readings_path.empty()) {
-    auto analysis = analyse(context, shop, readings_path);
-    if (!analysis) return analysis.problems();
-    return StartingState{analysis->state, "readings of " + readings_path};
+    auto analysed = analyse(context, shop, readings_path);
+    if (!analysed) return analysed.problems();
+    const analysis::Analysis& a = analysed->analysis;
+    return StartingState{a.state,
+                         {"readings of " + readings_path, a.temperature, a.pH, analysed->changed_since}};
   }
   const auto last = last_analysis(context, shop.tank.name);
   if (!last) return last.problems();
-  auto state = *last ? state_of(**last, shop) : state_at_aims(shop);
+  if (*last) {
+    auto state = state_of(**last, shop);
+    if (!state) return state.problems();
+    return StartingState{*std::move(state),
+                         {"analysis of " + (*last)->book.from, (*last)->temperature, *(*last)->book.pH,
+                          (*last)->changed_since}};
+  }
+  auto state = state_at_aims(shop);
   if (!state) return state.problems();
   return StartingState{*std::move(state),
-                       *last ? "analysis of " + (*last)->book.from
-                             : "as at its aims and at the mark; no readings and no log were given"};
+                       {"as at its aims and at the mark; no readings and no log were given",
+                        shop.tank.temperature,
+                        shop.tank.aim("pH")->aim,
+                        {}}};
 }
 
 }  // namespace bathwright::command

@@ -1,6 +1,8 @@
 // The state a verb starts from: today's readings, else the last logged analysis, else the tank's aims.
 #pragma once
 
+#include <bathwright/sheets/tank_sheet.hpp>
+
 #include "log_access.hpp"
 #include "shop.hpp"
 
@@ -8,14 +10,18 @@ namespace bathwright::command {
 
 struct StartingState {
   bath::TankState state;
-  std::string from;  ///< "readings of n-07-morning.toml"
+  sheets::StateRead read;
 };
 
 Result<StartingState> starting_state(const Context& context, const Shop& shop,
                                      const std::string& readings_path);
 
-/// The readings worked out, with the last logged analysis as the book.
-Result<analysis::Analysis> analyse(const Context& context, const Shop& shop,
-                                   const std::string& readings_path);
+/// Readings worked out, with the last logged analysis as the book.
+struct Analysed {
+  analysis::Analysis analysis;
+  std::optional<std::int64_t> logged_as;   ///< where the last logged analysis is of the same readings
+  std::vector<std::string> changed_since;  ///< what the log has of the tank after it, a sentence each
+};
+Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path);
 
 }  // namespace bathwright::command

@@ -1,8 +1,12 @@
 #include <algorithm>
 #include <bathwright/sheets/addition_sheet.hpp>
+#include <bathwright/sheets/analysis_sheet.hpp>
+#include <bathwright/sheets/cautions.hpp>
+#include <bathwright/sheets/doubts.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/sheets/tank_parts.hpp>
+#include <bathwright/units/show.hpp>
 #include <map>
 
 namespace bathwright::sheets {
@@ -28,6 +32,10 @@ Measured measured(double amount, const std::string& unit) {
   return {figure(amount), unit};
 }
 
+std::string counted(int count, const std::string& word) {
+  return std::to_string(count) + " " + word + (count == 1 ? "" : "s");
+}
+
 /// "H3BO3 at 18 degC" with its formula as people write it.
 std::string pretty_check(const std::string& name) {
   const std::size_t first = std::min(name.find(' '), name.size());
@@ -38,24 +46,28 @@ void weigh_out(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
   heading(lines, "Weigh out");
   Table table(
       {{"chemical"}, {"amount", Align::number}, {"unit"}, {"cost", Align::number}, {"lot, weighed by"}});
-  for (const auto& addition : plan.additions)
-    table.add(
-        {addition.name, figure(addition.amount), addition.unit, fixed(addition.cost, 2), "________________"});
+  for (const auto& addition : plan.additions) {
+    const Measured amount = measured(addition.amount, addition.unit);
+    table.add({addition.name, amount.figure, amount.unit, fixed(addition.cost, 2), "________________"});
+  }
   append(lines, table.lines());
   say(lines, "  Cost " + money(plan.cost, tank) + ". Salt brought in " + figure(plan.salt_load_mol) +
-                 " mol. Chance of ending in every window: " + chance(plan) + ".");
+                 " mol. Chance of ending in every window, from the analysis' uncertainty alone: " +
+                 chance(plan) + ". pH, volume, assay and weighing are taken as exact.");
 }
 
-/// What stops the step in full; what passed as a count. What is only to be watched stands once, under the
-/// steps.
+/// What stops the step in full; the rest as a count. What is only to be watched stands once, under the steps.
 void checks(Lines& lines, const std::vector<dosing::Check>& asked) {
-  int passed = 0;
+  int stopping = 0, to_watch = 0;
   for (const auto& check : asked) {
-    if (check.ok) ++passed;
-    if (!check.ok && check.stops) say(lines, "   STOP " + pretty_check(check.name) + ": " + check.detail, 3);
+    if (check.ok) continue;
+    ++(check.stops ? stopping : to_watch);
+    if (check.stops) say(lines, "   STOP " + pretty_check(check.name) + ": " + check.detail, 3);
   }
-  if (passed > 0)
-    say(lines, "   " + std::to_string(passed) + (passed == 1 ? " check" : " checks") + " passed");
+  std::string count = counted(static_cast<int>(asked.size()), "check");
+  if (stopping > 0) count += ", " + std::to_string(stopping) + (stopping == 1 ? " stops" : " stop");
+  if (to_watch > 0) count += ", " + std::to_string(to_watch) + " to watch";
+  if (!asked.empty()) say(lines, "   " + count + (stopping + to_watch == 0 ? ", all passed" : ""));
 }
 
 void watch(Lines& lines, const dosing::Plan& plan) {
@@ -85,7 +97,7 @@ void step_lines(Lines& lines, const bath::Tank& tank, const bath::BathType& type
 }
 
 void handling(Lines& lines, const bath::Tank& tank, const dosing::Plan& plan) {
-  heading(lines, "Hazard statements (the safety data sheet decides)");
+  heading(lines, "Hazard statements");
   for (const auto& addition : plan.additions) {
     const bath::ShelfItem* item = tank.on_shelf(addition.chemical);
     if (!item || item->stock.hazard_statements.empty()) continue;
@@ -108,20 +120,29 @@ void best_plan(Lines& lines, const bath::Tank& tank, const bath::BathType& type,
     append(lines, levels(judge(tank, type, plan.final_view.quantity_g_per_L, plan.final_view.pH)));
     handling(lines, tank, plan);
   }
-  for (const std::string& unmet : plan.unmet) say(lines, "  Not reached: " + unmet, 2);
+  if (!plan.unmet.empty()) heading(lines, "Not reached");
+  for (const std::string& unmet : plan.unmet) say(lines, "  " + unmet, 2);
 }
 
 }  // namespace
 
 Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type, const analysis::Analysis& analysis,
-                     const dosing::AdditionSheet& sheet, const Signature& signature) {
+                     const dosing::AdditionSheet& sheet, const std::vector<std::string>& changed_since,
+                     const Signature& signature) {
   Lines lines;
   tank_title(lines, tank, analysis.volume.v, analysis.temperature);
   say(lines, "Addition sheet. Volume: " + analysis.volume_from + ".");
-  heading(lines, "Found");
-  append(lines, levels(judge(tank, type, sheet.now.quantity_g_per_L, sheet.now.pH)));
+  say(lines, deferral);
+  std::vector<std::string> stopping = changed_since;
   for (const auto& suspect : analysis.suspects)
-    say(lines, "  STOP  " + suspect.what + ": " + suspect.reason + " " + suspect.try_this, 8);
+    stopping.push_back(suspect.what + ": " + suspect.reason + " " + suspect.try_this);
+  stops(lines, stopping);
+  heading(lines, "Found");
+  append(lines, levels(judge(tank, type, analysis)));
+  if (fixed(sheet.now.pH, 2) != fixed(analysis.pH, 2))
+    say(lines, "  At " + units::show(tank.temperature, "degC", 3) +
+                   ", for which the steps are worked out, the pH is " + fixed(sheet.now.pH, 2) + ".");
+  for (const std::string& note : analysis.notes) say(lines, "  Note: " + note, 2);
   if (!sheet.plans.empty()) best_plan(lines, tank, type, sheet.plans.front());
   if (sheet.plans.size() > 1) heading(lines, "Other plans");
   for (std::size_t i = 1; i < sheet.plans.size(); ++i) {
@@ -131,11 +152,13 @@ Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type, const a
   }
   if (!sheet.refused.empty()) heading(lines, "Refused");
   for (const auto& refusal : sheet.refused) say(lines, "  " + refusal.reason + " (" + refusal.rule + ")", 2);
-  if (!sheet.cautions.empty()) heading(lines, "Cautions");
-  for (const std::string& caution : sheet.cautions) say(lines, "  " + caution, 2);
+  cautions(lines, sheet.cautions);
+  doubts(lines, sheet.now.warnings);
   lines.emplace_back();
-  const bool ready = !sheet.plans.empty() && sheet.plans.front().feasible && analysis.suspects.empty();
-  if (!ready)
+  const bool ready = !sheet.plans.empty() && sheet.plans.front().feasible && stopping.empty();
+  if (!changed_since.empty())
+    say(lines, "Next: do not add. Analyse the tank as it is now.");
+  else if (!ready)
     say(lines, "Next: do not add yet. A second sample, or a second opinion, comes first.");
   else if (sheet.plans.front().additions.empty())
     say(lines, "Next: nothing. Every aim is met.");

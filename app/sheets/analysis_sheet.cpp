@@ -31,7 +31,7 @@ Lines analysis_sheet(const bath::Tank& tank, const bath::BathType& type, const a
   append(lines, levels(judged));
   lines.emplace_back();
   std::string density = "Density " + fixed(a.density_predicted.v, 4) + " kg/L from these levels";
-  if (a.density_measured) density += ", " + fixed(a.density_measured->v, 4) + " by hydrometer";
+  if (a.density_measured) density += ", " + a.density_read + " by hydrometer";
   say(lines, density + ".");
   for (const std::string& note : a.notes) say(lines, "Note: " + note, 2);
   if (!a.suspects.empty()) {

@@ -1,5 +1,6 @@
 #include <bathwright/sheets/log_sheet.hpp>
 #include <bathwright/sheets/table.hpp>
+#include <sstream>
 
 namespace bathwright::sheets {
 namespace {
@@ -12,9 +13,15 @@ std::string to_the_minute(const std::string& iso) {
   return text;
 }
 
+std::string numbers(const std::vector<std::int64_t>& all) {
+  std::string text;
+  for (const std::int64_t number : all) text += (text.empty() ? "" : ", ") + std::to_string(number);
+  return text;
+}
+
 }  // namespace
 
-Lines log_list(const std::vector<logbook::Entry>& entries) {
+Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by) {
   Lines lines;
   if (entries.empty()) {
     say(lines, "No entry fits.");
@@ -24,13 +31,15 @@ Lines log_list(const std::vector<logbook::Entry>& entries) {
   for (const auto& entry : entries) {
     std::string kind(logbook::name(entry.kind));
     if (entry.corrects) kind += " of " + std::to_string(*entry.corrects);
+    if (const auto found = corrected_by.find(entry.seq); found != corrected_by.end())
+      kind += ", corrected by " + numbers(found->second);
     table.add({std::to_string(entry.seq), to_the_minute(entry.at), kind, entry.tank, entry.shift, entry.by});
   }
   append(lines, table.lines());
   return lines;
 }
 
-Lines log_entry(const logbook::Entry& entry) {
+Lines log_entry(const logbook::Entry& entry, std::string_view body) {
   Lines lines;
   title(lines, "Entry " + std::to_string(entry.seq) + ", " + std::string(logbook::name(entry.kind)),
         entry.at);
@@ -41,7 +50,8 @@ Lines log_entry(const logbook::Entry& entry) {
   lines.push_back("hash     " + entry.hash);
   lines.push_back("follows  " + entry.previous);
   lines.emplace_back();
-  say(lines, entry.body);
+  std::istringstream text{std::string(body)};
+  for (std::string line; std::getline(text, line);) lines.push_back(line);
   return lines;
 }
 

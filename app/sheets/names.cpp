@@ -19,7 +19,9 @@ std::string fixed(double value, int decimals) {
   const auto end =
       std::to_chars(buffer.data(), buffer.data() + buffer.size(), value, std::chars_format::fixed, decimals)
           .ptr;
-  return {buffer.data(), end};
+  const std::string text(buffer.data(), end);
+  const bool rounds_to_zero = text.find_first_not_of("-0.") == std::string::npos;
+  return rounds_to_zero && text.starts_with('-') ? text.substr(1) : text;
 }
 
 std::string figure(double value, int digits) {

@@ -10,7 +10,7 @@ std::string_view words(Standing standing) {
     case Standing::in_window:
       return "in window";
     case Standing::low:
-      return "add this shift";
+      return "below window";
     case Standing::high:
       return "above window";
     case Standing::stop:
@@ -30,6 +30,17 @@ Standing standing(const bath::Tank& tank, const bath::BathType& type, std::strin
   return value > aim->high ? Standing::high : Standing::in_window;
 }
 
+namespace {
+
+/// What the substance is called on the bags of the tank's shelf, else by the bath type.
+std::string called(const bath::Tank& tank, const bath::Quantity& quantity) {
+  for (const bath::ShelfItem& item : tank.shelf)
+    if (item.stock.formula == quantity.formula.text()) return item.stock.name;
+  return quantity.label;
+}
+
+}  // namespace
+
 std::vector<Judged> judge(const bath::Tank& tank, const bath::BathType& type,
                           const std::vector<double>& quantity_g_per_L, double pH) {
   std::vector<Judged> judged;
@@ -40,7 +51,7 @@ std::vector<Judged> judge(const bath::Tank& tank, const bath::BathType& type,
     }
     for (std::size_t i = 0; i < type.quantities.size(); ++i)
       if (type.quantities[i].id == aim.quantity)
-        judged.push_back({&aim, type.quantities[i].label, "g/L", quantity_g_per_L[i],
+        judged.push_back({&aim, called(tank, type.quantities[i]), "g/L", quantity_g_per_L[i],
                           standing(tank, type, aim.quantity, quantity_g_per_L[i])});
   }
   return judged;

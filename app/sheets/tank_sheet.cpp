@@ -1,7 +1,10 @@
 #include <algorithm>
+#include <bathwright/sheets/cautions.hpp>
+#include <bathwright/sheets/doubts.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/sheets/tank_sheet.hpp>
+#include <bathwright/units/show.hpp>
 
 namespace bathwright::sheets {
 namespace {
@@ -16,14 +19,16 @@ Lines indicators(const std::vector<bath::IndicatorValue>& values) {
 }  // namespace
 
 Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath::TankView& view,
-                 std::string_view state_from) {
+                 const StateRead& read) {
   Lines lines;
-  tank_title(lines, tank, view.volume_L, tank.temperature);
-  say(lines, "State: " + std::string(state_from) + ".");
-  say(lines, "pH " + fixed(view.pH, 2) + ", density " + fixed(view.density_kg_per_L, 4) +
-                 " kg/L, ionic strength " + fixed(view.ionic_strength, 2) + " mol/kg, water activity " +
-                 fixed(view.water_activity, 4) + ".");
-  const auto judged = judge(tank, type, view.quantity_g_per_L, view.pH);
+  tank_title(lines, tank, view.volume_L, read.temperature);
+  say(lines, deferral);
+  say(lines, "State: " + read.from + ".");
+  stops(lines, read.changed_since);
+  say(lines, "At " + units::show(tank.temperature, "degC", 3) + ": pH " + fixed(view.pH, 2) + ", density " +
+                 fixed(view.density_kg_per_L, 4) + " kg/L, ionic strength " + fixed(view.ionic_strength, 2) +
+                 " mol/kg, water activity " + fixed(view.water_activity, 4) + ".");
+  const auto judged = judge(tank, type, view.quantity_g_per_L, read.pH);
   heading(lines, "Levels");
   append(lines, levels(judged));
   heading(lines, "In solution");
@@ -38,17 +43,19 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
       [&](const bath::Caution& caution) {  // those of a chemical stand on the addition sheet
         return caution.subject.empty() || type.quantity(caution.subject);
       };
-  if (std::any_of(type.cautions.begin(), type.cautions.end(), of_the_tank)) heading(lines, "Cautions");
+  std::vector<std::string> texts;
   for (const auto& caution : type.cautions)
-    if (of_the_tank(caution)) say(lines, "  " + caution.text, 2);
-  if (!view.warnings.empty()) heading(lines, "What is doubtful");
-  for (const auto& warning : view.warnings) say(lines, "  " + warning, 2);
+    if (of_the_tank(caution)) texts.push_back(caution.text);
+  cautions(lines, texts);
+  doubts(lines, view.warnings);
   lines.emplace_back();
   const auto over = crystallising(tank, view.headroom);
   for (const std::string& solid : over) say(lines, solid + ".", 2);
   const bool all_in = std::all_of(judged.begin(), judged.end(),
                                   [](const Judged& j) { return j.standing == Standing::in_window; });
-  if (!all_in)
+  if (!read.changed_since.empty())
+    say(lines, "Next: a new analysis; the levels above are no longer those of the tank.");
+  else if (!all_in)
     say(lines, "Next: out of window; bathwright dose works out what to add.");
   else if (!over.empty())
     say(lines, "Next: keep it warm, or bring down what crystallises before it idles.");

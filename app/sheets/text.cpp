@@ -62,6 +62,10 @@ void title(Lines& lines, std::string_view left, std::string_view right) {
   lines.push_back(std::string(left) + std::string(width - used, ' ') + std::string(right));
 }
 
+void stops(Lines& lines, const std::vector<std::string>& findings) {
+  for (const std::string& finding : findings) say(lines, "  STOP  " + finding, 8);
+}
+
 void append(Lines& lines, const Lines& more) { lines.insert(lines.end(), more.begin(), more.end()); }
 
 }  // namespace bathwright::sheets

@@ -101,6 +101,7 @@ TEST_CASE("solution keeps its contract", "[unit][command]") {
                   {"gases/[]/name", "text"},
                   {"gases/[]/partial_pressure_atm", "number"},
                   {"totals/Ni^2+", "number"}});
+  CHECK_THAT(run.out, !Catch::Contains("-0.0,") && !Catch::Contains("-0.0\n"));
   CHECK(run.json().at("totals").at("Ni^2+").get<double>() == Approx(1.0).margin(0.02).epsilon(0));
 }
 

@@ -30,6 +30,30 @@ TEST_CASE("formulae are shown as people write them", "[unit][command]") {
   CHECK_THAT(run.out, Catch::Contains("Next:"));
 }
 
+TEST_CASE("the slip tells its doubts in few words, defers once, and shows what was read", "[unit][command]") {
+  const auto run = Bench().run("dose " + app_test::tank + " " + app_test::readings);
+  const auto times = [&](const std::string& words) {
+    std::size_t count = 0;
+    for (std::size_t at = run.out.find(words); at != std::string::npos; at = run.out.find(words, at + 1))
+      ++count;
+    return count;
+  };
+  INFO(run.out);
+  CHECK_THAT(run.out, Catch::Contains("What is doubtful") && !Catch::Contains("doi:"));
+  CHECK(times("safety data sheet") == 1);
+  CHECK(times("supplier's SDS") == 0);
+  CHECK_THAT(run.out, Catch::Contains(" checks, 1 to watch") && Catch::Contains("3 cm low on 200 dm2"));
+  CHECK(times(" 4.10 ") >= 1);  // as read; 4.11 at the working temperature
+}
+
+TEST_CASE("the help of every verb ends with the options all of them take", "[unit][command]") {
+  const std::string verb = GENERATE("analyse", "dose", "tank", "path", "log", "log add", "log list",
+                                    "solution", "sources", "plugins", "plugins show");
+  const auto run = Bench().run(verb + " --help");
+  CHECK_THAT(run.out, Catch::Contains("Every verb takes:") && Catch::Contains("--log") &&
+                          Catch::Contains("--json") && Catch::Contains("--plugins"));
+}
+
 TEST_CASE("without a verb the program says what it can do", "[unit][command]") {
   const auto run = Bench().run("");
   CHECK_THAT(run.out, Catch::Contains("--help") && Catch::Contains("later"));

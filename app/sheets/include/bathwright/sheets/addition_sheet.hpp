@@ -14,8 +14,9 @@ struct Signature {
 };
 
 /// The best plan in full, the others in a line each.
+///   changed_since  what the log has of changes that are not in the readings, a sentence each
 [[nodiscard]] Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type,
                                    const analysis::Analysis& analysis, const dosing::AdditionSheet& sheet,
-                                   const Signature& signature);
+                                   const std::vector<std::string>& changed_since, const Signature& signature);
 
 }  // namespace bathwright::sheets

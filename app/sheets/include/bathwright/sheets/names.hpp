@@ -10,7 +10,7 @@ namespace bathwright::sheets {
 /// Ni^2+ as Ni²⁺, "NiSO4.6H2O (alpha)" as NiSO₄·6H₂O (alpha); what is no formula stays as it is.
 [[nodiscard]] std::string pretty(std::string_view name);
 
-/// To so many decimals; "" for NaN.
+/// To so many decimals, zero without a sign; "" for NaN.
 [[nodiscard]] std::string fixed(double value, int decimals);
 
 /// To four significant digits; "" for NaN.

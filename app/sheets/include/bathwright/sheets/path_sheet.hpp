@@ -1,4 +1,4 @@
-// What happens along an addition, as a table.
+// What happens along an addition, as tables.
 #pragma once
 
 #include <bathwright/bath/chemistry.hpp>
@@ -6,22 +6,36 @@
 
 namespace bathwright::sheets {
 
-/// The tank after so much of the present chemical was stirred in.
+/// One chemical that is stirred in, as it was asked for: 2 L of sulfuric acid.
+struct PathAddition {
+  std::string chemical;  ///< stock id
+  std::string name;
+  double amount = 0;
+  std::string unit;   ///< "kg", or "L" for a liquid
+  std::string asked;  ///< the amount as it was asked for: "500 mL"
+};
+
+/// The tank after so much of one addition; those before it are in completely.
 struct PathPoint {
-  std::string chemical;  ///< stock id; empty: before the first
-  double added_kg = 0;   ///< of this chemical
-  double total_kg = 0;   ///< of all so far
+  std::optional<std::size_t> addition;  ///< which one; nothing: before the first
+  double added = 0;                     ///< of it, in its unit
+  double total_kg = 0;                  ///< of all so far
   bath::TankView view;
 };
 
-[[nodiscard]] Lines path_sheet(const bath::Tank& tank, const std::vector<PathPoint>& points);
+/// What the additions do that they should not, a sentence each: a solid that comes to form or forms more, a
+/// quantity or pH that leaves its window or moves further out of it, more than the tank holds. What was so
+/// before, and is no worse, is not among them.
+///   points  the first before all additions
+[[nodiscard]] std::vector<std::string> path_findings(const bath::Tank& tank, const bath::BathType& type,
+                                                     const std::vector<PathAddition>& additions,
+                                                     const std::vector<PathPoint>& points);
 
-/// The watched solid nearest to saturation, or furthest above it, at the working or idle temperature.
-struct Nearest {
-  std::string solid;
-  bool idle = false;
-  double log10_room = 0;
-};
-[[nodiscard]] std::optional<Nearest> nearest_solid(const bath::TankView& view);
+/// A table for each addition, then `findings`.
+///   changed_since  what the log has of changes that are not in the first point, a sentence each
+[[nodiscard]] Lines path_sheet(const bath::Tank& tank, const std::vector<PathAddition>& additions,
+                               const std::vector<PathPoint>& points,
+                               const std::vector<std::string>& changed_since,
+                               const std::vector<std::string>& findings);
 
 }  // namespace bathwright::sheets

@@ -8,14 +8,15 @@ namespace bathwright::sheets {
 
 enum class Standing : std::uint8_t { not_controlled, in_window, low, high, stop };
 
-/// "in window", "add this shift", "above window", "stop"; "" where nothing is controlled.
+/// "in window", "below window", "above window", "stop"; "" where nothing is controlled.
 [[nodiscard]] std::string_view words(Standing standing);
 
 /// A level against the tank's window and the bath type's stop limits.
 [[nodiscard]] Standing standing(const bath::Tank& tank, const bath::BathType& type, std::string_view quantity,
                                 double value);
 
-/// Every controlled quantity and pH, in the order of the tank's aims.
+/// Every controlled quantity and pH, in the order of the tank's aims; a chemical of the shelf by its name
+/// there.
 struct Judged {
   const bath::Aim* aim;
   std::string label, unit;

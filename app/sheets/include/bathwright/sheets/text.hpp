@@ -24,6 +24,9 @@ void heading(Lines& lines, std::string_view words);
 /// Appends what stands left and right on one line.
 void title(Lines& lines, std::string_view left, std::string_view right);
 
+/// Appends each as a finding that stops the work.
+void stops(Lines& lines, const std::vector<std::string>& findings);
+
 void append(Lines& lines, const Lines& more);
 
 }  // namespace bathwright::sheets
