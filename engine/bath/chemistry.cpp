@@ -5,6 +5,7 @@
 #include <bathwright/matter/water.hpp>
 #include <bathwright/speciation/coverage.hpp>
 #include <cmath>
+#include <cstdio>
 #include <numbers>
 
 namespace bathwright::bath {
@@ -70,11 +71,15 @@ double onset_pH(const Solver& solver, const TankState& state, const Equilibrium&
 
 Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Celsius idle) {
   Problems problems;
-  for (const auto& [name, t] : {std::pair{"temperature", working}, std::pair{"idle_temperature", idle}})
-    if (!(t.v >= type.min_C && t.v <= type.max_C) && !(t.v == idle.v && t.v >= 0 && t.v <= 100))
-      problems.push_back(
-          {Fault::out_of_range, name, std::to_string(t.v) + " degC",
-           std::to_string(type.min_C) + " to " + std::to_string(type.max_C) + " degC for " + type.name, ""});
+  const auto within = [&](const char* name, Celsius t, double low, double high) {
+    if (t.v >= low && t.v <= high) return;
+    char found[32], range[64];
+    std::snprintf(found, sizeof found, "%.4g degC", t.v);
+    std::snprintf(range, sizeof range, "%.4g to %.4g degC for ", low, high);
+    problems.push_back({Fault::out_of_range, name, found, range + type.name, ""});
+  };
+  within("temperature", working, type.min_C, type.max_C);
+  within("idle_temperature", idle, 0, type.max_C);  // cold, a tank only has to be computed, not worked
   if (!problems.empty()) return problems;
 
   auto equilibria = speciation::Equilibria::built_in(type.convention).with(type.own_species, type.own_solids);
@@ -85,9 +90,9 @@ Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Cels
   if (!system) return system.problems();
   auto shared = std::make_shared<const speciation::ChemicalSystem>(*std::move(system));
   const auto kind = model_for(type.convention);
-  auto at_work = Solver::prepare(shared, kind, working);
+  auto at_work = Solver::prepare(shared, kind, working, type.acid_set);
   if (!at_work) return at_work.problems();
-  auto at_rest = Solver::prepare(shared, kind, idle);
+  auto at_rest = Solver::prepare(shared, kind, idle, type.acid_set);
   if (!at_rest) return at_rest.problems();
   auto density = matter::SolutionDensity::for_species(shared->components());
   if (!density) return density.problems();
@@ -238,6 +243,9 @@ Result<TankView> Chemistry::view(const TankState& state) const {
     view.indicators.push_back(std::move(value));
   }
 
+  if (view.ionic_strength > p.type.max_ionic_strength)
+    view.warnings.push_back("the ionic strength is beyond what " + p.type.name +
+                            " was made for: " + p.type.validity);
   const speciation::Coverage covered = speciation::coverage(p.working, *now);
   for (const std::string& warning : covered.warnings) view.warnings.push_back(warning);
   for (const std::string& missing : covered.missing) view.warnings.push_back(missing);
@@ -320,7 +328,7 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
 
   auto solver = std::abs(temperature.v - working_temperature().v) < 1e-9
                     ? Result<Solver>(p.working)
-                    : Solver::prepare(p.system, p.working.model().kind(), temperature);
+                    : Solver::prepare(p.system, p.working.model().kind(), temperature, p.type.acid_set);
   if (!solver) return solver.problems();
   double acid = 0;
   for (int round = 0; round < 20; ++round) {

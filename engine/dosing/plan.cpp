@@ -19,7 +19,7 @@ using bath::Tank;
 using bath::TankState;
 
 constexpr double met_relative = 1e-6;  // an aim within this of its value is met
-constexpr double met_pH = 1e-3;
+constexpr double met_pH = 0.01;        // what a pH meter shows; less would need milligrams of acid
 
 /// A shelf chemical as a column of the planner: what a kg of it does.
 struct Supply {
@@ -212,9 +212,81 @@ std::vector<std::string> unmet_aims(const Tank& tank, const Chemistry& chemistry
       if (quantities[q].id == aim.quantity &&
           std::abs(end.quantity_g_per_L[q] - aim.aim) > met_relative * aim.aim)
         unmet.push_back(quantities[q].label + " ends at " + units::significant(end.quantity_g_per_L[q], 4) +
-                        " g/L, aim " + units::significant(aim.aim, 4) + " g/L");
+                        " g/L, aim " + units::significant(aim.aim, 4) + " g/L" +
+                        (end.quantity_g_per_L[q] > aim.aim ? "; only taking bath out brings it lower" : ""));
   }
   return unmet;
+}
+
+/// The least-cost plan from these supplies, portioned, checked and seen through to its end.
+Result<Plan> make_plan(const Tank& tank, const Chemistry& chemistry, const TankState& now,
+                       const bath::TankView& now_view, std::vector<Supply> supplies,
+                       const std::map<std::string, double>& uncertainty) {
+  Planner planner(tank, chemistry, now, std::move(supplies));
+  if (Outcome settled = planner.run(); !settled) return settled.problems();
+  Plan plan;
+  plan.kind = "least cost";
+  std::vector<Portioned> amounts;
+  for (std::size_t c = 0; c < planner.supplies().size(); ++c) {
+    const Supply& supply = planner.supplies()[c];
+    const double kg = planner.kg()[c];
+    // Less than a gram of a chemical, or than a twentieth of a percent of the tank in water, is nothing
+    // anybody adds.
+    const double nothing_kg = supply.item->stock.formula == "H2O" ? 5e-4 * tank.working_volume.v : 1e-3;
+    if (kg <= nothing_kg) continue;
+    amounts.push_back({supply.item, &supply.brings, kg});
+    plan.cost += kg * supply.price_per_kg;
+    for (std::size_t i = 0; i < chemistry.components().size(); ++i)
+      if (activity::charge_in_name(chemistry.components()[i]) != 0)
+        plan.salt_load_mol += kg * std::abs(supply.brings.component_mol[i]);
+  }
+  auto steps = make_steps(tank, chemistry, now, std::move(amounts));
+  if (!steps) return steps.problems();
+  plan.additions = steps->additions;
+  plan.steps = steps->steps;
+  plan.final_state = steps->final_state;
+  auto end = chemistry.view(plan.final_state);
+  if (!end) return end.problems();
+  plan.final_view = *std::move(end);
+  plan.unmet = unmet_aims(tank, chemistry, plan.final_view);
+  plan.feasible = plan.unmet.empty();
+  for (const Step& step : plan.steps)
+    for (const Check& check : step.checks) plan.feasible = plan.feasible && (check.ok || !check.stops);
+  plan.probability_in_window = chance_in_window(tank, chemistry, now_view, plan.final_view, uncertainty);
+  return plan;
+}
+
+bool is_acid(const Supply& supply) { return supply.brings.component_mol[0] > 0; }
+bool is_alkali(const Supply& supply) { return supply.brings.component_mol[0] < 0; }
+
+bool doses(const Plan& plan, const std::vector<Supply>& supplies, bool (*kind)(const Supply&)) {
+  return std::any_of(plan.additions.begin(), plan.additions.end(), [&](const Addition& addition) {
+    return std::any_of(supplies.begin(), supplies.end(), [&](const Supply& supply) {
+      return supply.item->stock.id == addition.chemical && kind(supply);
+    });
+  });
+}
+
+/// Least cost, but never an acid and an alkali for one tank in one plan: cheap as the pair may be, they only
+/// make salt and heat of each other. Of the plans without either kind, the one that leaves fewer aims unmet,
+/// then the cheaper.
+Result<Plan> least_cost_plan(const Tank& tank, const Chemistry& chemistry, const TankState& now,
+                             const bath::TankView& now_view, const std::vector<Supply>& supplies,
+                             const std::map<std::string, double>& uncertainty) {
+  auto plan = make_plan(tank, chemistry, now, now_view, supplies, uncertainty);
+  if (!plan || !doses(*plan, supplies, is_acid) || !doses(*plan, supplies, is_alkali)) return plan;
+  const auto without = [&](bool (*kind)(const Supply&)) {
+    std::vector<Supply> kept = supplies;
+    std::erase_if(kept, kind);
+    return make_plan(tank, chemistry, now, now_view, std::move(kept), uncertainty);
+  };
+  auto no_acid = without(is_acid), no_alkali = without(is_alkali);
+  if (!no_acid) return no_alkali;
+  if (!no_alkali) return no_acid;
+  const bool acid_free = no_acid->unmet.size() != no_alkali->unmet.size()
+                             ? no_acid->unmet.size() < no_alkali->unmet.size()
+                             : no_acid->cost < no_alkali->cost;
+  return acid_free ? no_acid : no_alkali;
 }
 
 }  // namespace
@@ -240,38 +312,10 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
       return Problem{Fault::bad_input, tank.file,
                      aim.quantity + " is not a quantity of " + chemistry.type().name, "", ""};
 
-  Planner planner(tank, chemistry, now, std::move(supplies));
-  if (Outcome settled = planner.run(); !settled) return settled.problems();
-
-  Plan plan;
-  plan.kind = "least cost";
-  std::vector<Portioned> amounts;
-  for (std::size_t c = 0; c < planner.supplies().size(); ++c) {
-    const Supply& supply = planner.supplies()[c];
-    constexpr double nothing_kg = 1e-6;
-    if (planner.kg()[c] > nothing_kg) amounts.push_back({supply.item, &supply.brings, planner.kg()[c]});
-  }
-  const auto steps = make_steps(tank, chemistry, now, std::move(amounts));
-  if (!steps) return steps.problems();
-  plan.additions = steps->additions;
-  plan.steps = steps->steps;
-  plan.final_state = steps->final_state;
-  auto end = chemistry.view(plan.final_state);
-  if (!end) return end.problems();
-  plan.final_view = *std::move(end);
-  for (std::size_t c = 0; c < planner.supplies().size(); ++c) {
-    plan.cost += planner.kg()[c] * planner.supplies()[c].price_per_kg;
-    for (std::size_t i = 0; i < chemistry.components().size(); ++i)
-      if (activity::charge_in_name(chemistry.components()[i]) != 0)
-        plan.salt_load_mol += planner.kg()[c] * std::abs(planner.supplies()[c].brings.component_mol[i]);
-  }
-  plan.unmet = unmet_aims(tank, chemistry, plan.final_view);
-  plan.feasible = plan.unmet.empty();
-  for (const Step& step : plan.steps)
-    for (const Check& check : step.checks) plan.feasible = plan.feasible && (check.ok || !check.stops);
-  plan.probability_in_window = chance_in_window(tank, chemistry, sheet.now, plan.final_view, uncertainty);
-  sheet.cautions = cautions_for(tank, chemistry.type(), plan);
-  sheet.plans.push_back(std::move(plan));
+  auto plan = least_cost_plan(tank, chemistry, now, sheet.now, supplies, uncertainty);
+  if (!plan) return plan.problems();
+  sheet.cautions = cautions_for(tank, chemistry.type(), *plan);
+  sheet.plans.push_back(*std::move(plan));
   return sheet;
 }
 

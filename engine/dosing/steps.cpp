@@ -71,7 +71,9 @@ void check_volume(const Tank& tank, const TankView& view, std::vector<Check>& ch
                     significant(view.volume_L, 5) + " L of " + significant(brim, 5) + " L to the brim"});
 }
 
-void check_pH(const Tank& tank, const BathType& type, const TankView& view, std::vector<Check>& checks) {
+/// A tank that starts outside may stay there until its pH is trimmed, but no step may take it farther out.
+void check_pH(const Tank& tank, const BathType& type, double pH_at_start, const TankView& view,
+              std::vector<Check>& checks) {
   double low = -HUGE_VAL, high = HUGE_VAL;
   if (const bath::Aim* aim = tank.aim("pH")) low = aim->low, high = aim->high;
   for (const bath::Window& window : type.windows)
@@ -79,7 +81,9 @@ void check_pH(const Tank& tank, const BathType& type, const TankView& view, std:
       low = std::isnan(window.stop_low) ? std::min(low, window.low) : window.stop_low;
       high = std::isnan(window.stop_high) ? std::max(high, window.high) : window.stop_high;
     }
-  const bool ok = !(view.pH < low) && !(view.pH > high);
+  constexpr double margin = 0.1;  // salts move the pH a little without adding acid
+  const bool ok =
+      !(view.pH < std::min(low, pH_at_start - margin)) && !(view.pH > std::max(high, pH_at_start + margin));
   checks.push_back({"pH on the way", ok, true,
                     "pH " + significant(view.pH, 3) + ", stop below " + significant(low, 3) + " and above " +
                         significant(high, 3)});
@@ -105,6 +109,9 @@ Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState
   std::stable_sort(amounts.begin(), amounts.end(),
                    [&](const Portioned& a, const Portioned& b) { return place(type, a) < place(type, b); });
   Steps result;
+  const auto start = chemistry.speciate(state);
+  if (!start) return start.problems();
+  const double pH_at_start = start->pH();
   for (const Portioned& one : amounts) {
     const TankState whole = Chemistry::after(state, *one.brings, one.kg);
     const auto before = chemistry.speciate(state), after = chemistry.speciate(whole);
@@ -130,7 +137,7 @@ Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState
       if (!predicted) return predicted.problems();
       step.predicted = *std::move(predicted);
       check_volume(tank, step.predicted, step.checks);
-      check_pH(tank, type, step.predicted, step.checks);
+      check_pH(tank, type, pH_at_start, step.predicted, step.checks);
       check_solids(chemistry, step.predicted, step.checks);
       result.steps.push_back(std::move(step));
     }

@@ -31,6 +31,9 @@ std::optional<Problem> problem_with_path(const fs::path& path, OpenMode mode) {
               "make the folder, or check the path");
   if (fs::exists(folder_status) && !fs::is_directory(folder_status))
     return io(path.string(), folder.string() + " is a file, not a folder", "check the path");
+  if (access(folder.c_str(), X_OK) != 0)
+    return io(path.string(), "you may not look into the folder " + folder.string(),
+              "ask for access to it, or name a log elsewhere");
   const fs::file_status status = fs::status(path, error);
   if (fs::is_directory(status))
     return io(path.string(), "this is a folder, not a logbook file", "name the file in it");
@@ -44,7 +47,8 @@ bool writable(const fs::path& path) { return access(path.c_str(), W_OK) == 0; }
 /// SQLite reads a log in WAL mode through helper files beside it. A reader that may not write there can still
 /// read a log that was closed properly (no -wal file: all is in the main file), as it stands at this moment.
 bool must_read_as_it_stands(const fs::path& path) {
-  const bool closed = !fs::exists(fs::path(path.string() + "-wal"));
+  std::error_code error;
+  const bool closed = !fs::exists(fs::path(path.string() + "-wal"), error);
   return closed && !(writable(path) && writable(folder_of(path)));
 }
 

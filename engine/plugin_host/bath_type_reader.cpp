@@ -162,6 +162,9 @@ class Reader {
     code({"", 0, "convention"}, in_.convention, BW_ASSOCIATION);
     out_.convention = in_.convention == BW_ASSOCIATION ? activity::Convention::association
                                                        : activity::Convention::interaction;
+    code({"", 0, "acid_set"}, in_.acid_set, BW_MUCH_CHLORIDE);
+    out_.acid_set =
+        in_.acid_set == BW_MUCH_CHLORIDE ? activity::AcidSet::chloride : activity::AcidSet::sulfate;
   }
 
   void read_sources() {

@@ -70,7 +70,7 @@ activity::AcidSet acid_set_for(const speciation::Composition& component_mol) {
     const auto found = component_mol.find(name);
     return found == component_mol.end() ? 0.0 : found->second;
   };
-  return total("Cl^-") > total("SO4^2-") / 3 ? activity::AcidSet::chloride : activity::AcidSet::sulfate;
+  return activity::acid_set_for(total("Cl^-"), total("SO4^2-"));
 }
 
 Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {

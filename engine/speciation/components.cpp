@@ -73,15 +73,14 @@ std::vector<Candidate> candidates(const Formula& formula, const std::vector<std:
   return found;
 }
 
-/// Offers every set of candidates of the smallest size of which `accept` takes at least one.
-template <class Accept>
-bool smallest_sets(const std::vector<Candidate>& from, Accept accept) {
+/// Offers every set of up to four candidates, small sets first.
+template <class Offer>
+void each_set(const std::vector<Candidate>& from, Offer offer) {
   constexpr std::size_t largest = 4;
   std::vector<const Candidate*> chosen;
-  bool found = false;
   auto choose = [&](auto&& self, std::size_t start, std::size_t wanted) -> void {
     if (wanted == 0) {
-      found = accept(chosen) || found;
+      offer(chosen);
       return;
     }
     for (std::size_t i = start; i + wanted <= from.size(); ++i) {
@@ -90,9 +89,7 @@ bool smallest_sets(const std::vector<Candidate>& from, Accept accept) {
       chosen.pop_back();
     }
   };
-  for (std::size_t size = 1; size <= std::min(largest, from.size()) && !found; ++size)
-    choose(choose, 0, size);
-  return found;
+  for (std::size_t size = 1; size <= std::min(largest, from.size()); ++size) choose(choose, 0, size);
 }
 
 const SpeciesData* species_with_composition(const Formula& formula, const Equilibria& equilibria) {
@@ -119,24 +116,24 @@ Result<Parts> parts_of(const Formula& formula, const Equilibria& equilibria) {
     }
   }
   // Several sets may fit the atoms (ammonium sulfate also reads as sulfamate, ammonia and water): the one
-  // that makes or takes up least water beside the crystal water is what the formula means.
+  // that makes or takes up least water beside the crystal water is what the formula means, and the smallest
+  // of those.
   Parts parts;
   double least_water = std::numeric_limits<double>::infinity();
-  const bool found = smallest_sets(candidates(formula, equilibria.basis()), [&](const auto& chosen) {
+  each_set(candidates(formula, equilibria.basis()), [&](const auto& chosen) {
     const auto x = coefficients(formula, chosen, true);
-    if (!x) return false;
+    if (!x) return;
     const auto n = static_cast<Eigen::Index>(chosen.size());
     const double protons = (*x)(n), water = (*x)(n + 1), made = std::abs(water - formula.crystal_water());
-    if (made > least_water - integer_tolerance) return true;
+    if (made > least_water - integer_tolerance) return;
     least_water = made;
     parts = {};
     for (std::size_t k = 0; k < chosen.size(); ++k)
       parts.basis[chosen[k]->name] = std::round((*x)(static_cast<Eigen::Index>(k)));
     if (std::abs(protons) > integer_tolerance) parts.basis["H^+"] += std::round(protons);
     parts.water = std::abs(water) > integer_tolerance ? water : 0;
-    return true;
   });
-  if (found) return parts;
+  if (std::isfinite(least_water)) return parts;
   std::string known;
   for (const std::string& name : equilibria.basis())
     if (auto parsed = Formula::parse(name)) {

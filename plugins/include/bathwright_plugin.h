@@ -69,6 +69,7 @@ enum { BW_SALT_VIEW = 1 };
 /* Which constants of the shared tables the bath type is written for: weak ion pairs inside the activity
  * coefficients (interaction, Pitzer) or as explicit species (association, Davies and Debye-Hueckel). */
 enum { BW_INTERACTION = 1, BW_ASSOCIATION = 2 };
+enum { BW_LITTLE_CHLORIDE = 1, BW_MUCH_CHLORIDE = 2 };
 
 /* What one unit of a use is. */
 enum { BW_PER_AH = 1, BW_PER_G_DEPOSIT = 2, BW_PER_M2 = 3, BW_PER_HOUR = 4 };
@@ -249,7 +250,9 @@ typedef struct bw_bath_type {
   const char* validity;                 /* [req][long] the limits, in words */
   double min_C, max_C;                  /* where the bath type may be used */
   double max_ionic_strength_mol_per_kg; /* NaN: as far as the activity model goes */
-  uint32_t convention, reserved;        /* BW_INTERACTION or BW_ASSOCIATION; 0 */
+  uint32_t convention;                  /* BW_INTERACTION or BW_ASSOCIATION */
+  uint32_t acid_set;                    /* BW_LITTLE_CHLORIDE or BW_MUCH_CHLORIDE (more than a third of the
+                                         * sulfate): which regressed interactions serve acid in a metal sulfate */
   bw_rows sources;                      /* bw_source, >= 1 */
   bw_rows components;                   /* bw_component, >= 1 */
   bw_rows quantities;                   /* bw_quantity, >= 1 */

@@ -212,6 +212,7 @@ static const bw_bath_type watts_nickel = {
     .max_C = 75,
     .max_ionic_strength_mol_per_kg = 10,
     .convention = BW_INTERACTION,
+    .acid_set = BW_MUCH_CHLORIDE,
     .sources = TABLE(sources),
     .components = TABLE(components),
     .quantities = TABLE(quantities),

@@ -71,7 +71,7 @@ struct StatedBath {
                        70,
                        open,
                        BW_INTERACTION,
-                       0,
+                       BW_LITTLE_CHLORIDE,
                        {},
                        {},
                        {},

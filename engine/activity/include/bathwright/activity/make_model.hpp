@@ -13,6 +13,11 @@ namespace bathwright::activity {
 /// of the sulfate. The two must never be mixed.
 enum class AcidSet { sulfate, chloride };
 
+/// The set for a solution by its totals (any unit, the same for both): the rule above.
+[[nodiscard]] constexpr AcidSet acid_set_for(double chloride, double sulfate) {
+  return chloride > sulfate / 3 ? AcidSet::chloride : AcidSet::sulfate;
+}
+
 /// The model, prepared for the solutes in this order. t: 0-100 degC.
 /// Fails on more than max_solutes solutes or a temperature outside the range.
 Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::span<const Solute> solutes,

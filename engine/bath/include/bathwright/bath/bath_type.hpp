@@ -3,7 +3,7 @@
 // (chemistry.hpp).
 #pragma once
 
-#include <bathwright/activity/model.hpp>
+#include <bathwright/activity/make_model.hpp>
 #include <bathwright/matter/formula.hpp>
 #include <bathwright/speciation/equilibria.hpp>
 #include <cstdint>
@@ -100,6 +100,7 @@ struct BathType {
   std::string summary, validity;
   double min_C = 0, max_C = 100, max_ionic_strength = not_given;
   activity::Convention convention = activity::Convention::interaction;
+  activity::AcidSet acid_set = activity::AcidSet::sulfate;  ///< where a metal sulfate meets acid
   std::vector<Source> sources;
   std::vector<Component> components;
   std::vector<Quantity> quantities;

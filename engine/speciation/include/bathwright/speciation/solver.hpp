@@ -74,7 +74,7 @@ class Solver {
   static Result<Solver> prepare(std::shared_ptr<const ChemicalSystem> system, activity::ModelKind model,
                                 units::Celsius t, activity::AcidSet acid_set = activity::AcidSet::sulfate);
 
-  /// Converges to: relative mass balance 1e-12, ln mass action 1e-10, ln saturation 1e-9, as verified. Fails,
+  /// Converges to: relative mass balance 1e-12, ln mass action 1e-10, ln saturation 1e-8, as verified. Fails,
   /// never with a silent wrong answer, on: a total that is not finite or negative, water not positive
   /// (bad_input); a pH or gas pressure that cannot be held with what was given, a solution that dries up or
   /// that the model cannot follow (out_of_range); no convergence (not_converged, with the numbers).
