@@ -102,7 +102,7 @@ Result<std::vector<std::string>> changes_after(const logbook::Logbook& log, cons
   if (!plans) return plans.problems();
   if (!plans->empty())
     changes.push_back(*plans + (plans->starts_with("entry ") ? " was" : " were") +
-                      " made from these readings: what was added by it is not in them.");
+                      " made from these readings: what was added since is not in them.");
   return changes;
 }
 
