@@ -135,8 +135,9 @@ Result<Chosen> choose_model(const Recipe& recipe) {
   if (davies->coverage.valid)
     return Chosen{*std::move(davies), "Pitzer parameters do not cover this solution, and ionic strength " +
                                           strength + " is low enough"};
-  return Chosen{*std::move(pitzer), "its parameters do not cover all of this solution, but ionic strength " +
-                                        strength + " is beyond Davies' range"};
+  return Chosen{*std::move(pitzer),
+                "its parameters do not cover all of this solution, but the ionic strength by Davies, " +
+                    strength + ", is beyond the range of that model"};
 }
 
 /// Dissolved totals of the components, mol per kg of liquid water, and all the water that goes with them.
