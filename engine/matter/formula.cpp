@@ -1,4 +1,5 @@
 #include <algorithm>
+#include <bathwright/base/letters.hpp>
 #include <bathwright/matter/formula.hpp>
 #include <cassert>
 #include <cmath>
@@ -66,7 +67,7 @@ class Parser {
   char peek() const { return at_ < text_.size() ? text_[at_] : '\0'; }
 
   bool fail(std::string what, std::string expected, std::string try_this = "") {
-    problem.what = "formula \"" + std::string(text_.substr(0, longest_text)) + "\": " + std::move(what);
+    problem.what = "formula \"" + std::string(whole_letters(text_, longest_text)) + "\": " + std::move(what);
     problem.expected = std::move(expected);
     problem.try_this = std::move(try_this);
     return false;

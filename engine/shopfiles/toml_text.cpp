@@ -4,6 +4,7 @@
 #include <toml++/toml.h>
 
 #include <algorithm>
+#include <bathwright/base/letters.hpp>
 #include <cerrno>
 #include <cstring>
 #include <filesystem>
@@ -119,12 +120,9 @@ std::string at_line(std::string_view name, int line) { return fmt::format("{}:{}
 
 std::string printable(std::string_view text) {
   constexpr std::size_t longest = 60;  // a message is one line
-  std::size_t end = std::min(text.size(), longest);
-  while (end < text.size() && (static_cast<unsigned char>(text[end]) & 0xC0) == 0x80)
-    --end;  // whole letters only
-  std::string shown(text.substr(0, end));
+  std::string shown(whole_letters(text, longest));
   std::ranges::replace_if(shown, is_control, '?');
-  return end < text.size() ? shown + "..." : shown;
+  return shown.size() < text.size() ? shown + "..." : shown;
 }
 
 Result<std::string> read_text_file(const std::string& path) {

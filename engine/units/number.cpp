@@ -1,6 +1,7 @@
 #include "number.hpp"
 
 #include <algorithm>
+#include <bathwright/base/letters.hpp>
 #include <charconv>
 #include <cmath>
 
@@ -28,10 +29,8 @@ Problem thousands_separator(std::string_view text, std::string_view where) {
 
 std::string quoted(std::string_view text) {
   constexpr std::size_t longest = 60;  // a message is one line
-  if (text.size() <= longest) return '"' + std::string(text) + '"';
-  std::size_t end = longest;
-  while (end > 0 && (static_cast<unsigned char>(text[end]) & 0xC0) == 0x80) --end;  // whole letters only
-  return '"' + std::string(text.substr(0, end)) + "...\"";
+  const std::string_view shown = whole_letters(text, longest);
+  return '"' + std::string(shown) + (shown.size() < text.size() ? "...\"" : "\"");
 }
 
 Result<NumberAndUnit> split_number(std::string_view text, std::string_view where) {

@@ -219,3 +219,11 @@ TEST_CASE("what is not a formula is refused", "[failure][matter]") {
   CHECK(message("Ni(SO4").find("not closed") != std::string::npos);
   CHECK(message("Ni^+2").find("^2+") != std::string::npos);
 }
+
+TEST_CASE("a formula too long is not cut in the middle of a dot", "[failure][matter]") {
+  std::string typed = "B";
+  while (typed.size() < 202) typed += "·H";  // two bytes a dot; the 200th byte is the first of one
+  INFO(message(typed));
+  CHECK(message(typed).find("\xc2\"") == std::string::npos);
+  CHECK(message(typed).find("H\": the formula is longer") != std::string::npos);
+}
