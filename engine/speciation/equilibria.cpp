@@ -185,7 +185,8 @@ Outcome Equilibria::resolve() {
                           "Write it over species that are not formed from it."});
       return nullptr;
     }
-    const auto& [stated, reaction] = row->second;
+    const StatedSpecies* stated = row->second.first;
+    const Reaction& reaction = row->second.second;
     SpeciesData data{name, {}, 0, stated->constant, {stated->source}};
     if (stated->measured_at_ionic_strength > 0)
       carry_to_zero(data.formation, reaction, stated->measured_at_ionic_strength);

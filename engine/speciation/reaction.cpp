@@ -1,5 +1,6 @@
 #include <bathwright/speciation/reaction.hpp>
 #include <charconv>
+#include <cmath>
 
 namespace bathwright::speciation {
 namespace {
@@ -21,7 +22,7 @@ bool parse_side(std::string_view text, std::vector<Term>& terms) {
       const auto [stop, error] = std::from_chars(part.data(), part.data() + space, coefficient);
       if (error == std::errc{} && stop == part.data() + space) part = trimmed(part.substr(space));
     }
-    if (part.empty() || !(coefficient > 0)) return false;
+    if (part.empty() || !(coefficient > 0) || !std::isfinite(coefficient)) return false;
     terms.push_back({coefficient, std::string(part)});
     if (end == std::string_view::npos) return true;
     text.remove_prefix(end + joint.size());
