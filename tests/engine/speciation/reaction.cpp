@@ -27,7 +27,7 @@ TEST_CASE("coefficients may be decimal, names may hold + and digits", "[unit]") 
 
 TEST_CASE("a reaction that does not read is refused with its place", "[failure]") {
   for (const char* text : {"", "A", "A + B", "A = ", " = A", "A = B = C", "A +  + B = C", "0 A = B",
-                           "-1 A = B", "A == B", "A=B"}) {
+                           "-1 A = B", "inf A = B", "A == B", "A=B"}) {
     INFO(text);
     const auto reaction = parse_reaction(text, "species.csv:7");
     REQUIRE_FALSE(reaction);
