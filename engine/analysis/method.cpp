@@ -7,20 +7,10 @@
 namespace bathwright::analysis {
 namespace {
 
-std::vector<std::string> split_at_bars(std::string_view field) {
-  std::vector<std::string> parts;
-  while (!field.empty()) {
-    const std::size_t bar = field.find('|');
-    parts.emplace_back(field.substr(0, bar));
-    field.remove_prefix(bar == field.npos ? field.size() : bar + 1);
-  }
-  return parts;
-}
-
 Method method_of(const data::CsvRow& row) {
   Method m;
   m.id = row["id"];
-  m.aliases = split_at_bars(row["aliases"]);
+  m.aliases = row.list("aliases");
   m.analyte = row["analyte"];
   m.titrant = row["titrant"];
   m.mol_per_mol = row.number("mol_per_mol");

@@ -46,6 +46,17 @@ double CsvRow::number(std::string_view column) const {
   return reads_as_number((*this)[column], value) ? value : std::numeric_limits<double>::quiet_NaN();
 }
 
+std::vector<std::string> CsvRow::list(std::string_view column) const {
+  std::string_view field = (*this)[column];
+  std::vector<std::string> parts;
+  while (!field.empty()) {
+    const std::size_t bar = field.find('|');
+    parts.emplace_back(field.substr(0, bar));
+    field.remove_prefix(bar == field.npos ? field.size() : bar + 1);
+  }
+  return parts;
+}
+
 std::string CsvRow::where() const { return table_->name_ + ":" + std::to_string(table_->rows_[index_].line); }
 
 Result<CsvTable> CsvTable::read(std::string name, std::string_view content,

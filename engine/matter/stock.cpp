@@ -6,16 +6,6 @@
 namespace bathwright::matter {
 namespace {
 
-std::vector<std::string> split_at_bars(std::string_view field) {
-  std::vector<std::string> parts;
-  while (!field.empty()) {
-    const std::size_t bar = field.find('|');
-    parts.emplace_back(field.substr(0, bar));
-    field.remove_prefix(bar == field.npos ? field.size() : bar + 1);
-  }
-  return parts;
-}
-
 StockChemical chemical_of(const data::CsvRow& row) {
   StockChemical c;
   c.id = row["id"];
@@ -24,9 +14,9 @@ StockChemical chemical_of(const data::CsvRow& row) {
   c.liquid = row["liquid"] == "yes";
   c.assay = row.number("assay");
   c.kg_per_L = row.number("kg_per_L");
-  c.hazard_statements = split_at_bars(row["hazard_statements"]);
-  c.incompatible_with = split_at_bars(row["incompatible_with"]);
-  c.cautions = split_at_bars(row["cautions"]);
+  c.hazard_statements = row.list("hazard_statements");
+  c.incompatible_with = row.list("incompatible_with");
+  c.cautions = row.list("cautions");
   c.storage = row["storage"];
   c.note = row["note"];
   c.source = row["source"];

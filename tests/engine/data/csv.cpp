@@ -92,3 +92,11 @@ TEST_CASE("every problem of a table is reported, not only the first", "[failure]
   CHECK(table.problems()[0].where == "salts.csv:2");
   CHECK(table.problems()[1].where == "salts.csv:3");
 }
+
+TEST_CASE("a field may hold a list", "[unit]") {
+  const auto table = CsvTable::read("t.csv", "id,parts\n1,a|b c|d\n2,\n3,one\n");
+  REQUIRE(table);
+  CHECK((*table)[0].list("parts") == std::vector<std::string>{"a", "b c", "d"});
+  CHECK((*table)[1].list("parts").empty());
+  CHECK((*table)[2].list("parts") == std::vector<std::string>{"one"});
+}

@@ -20,6 +20,8 @@ class CsvRow {
   [[nodiscard]] std::string_view operator[](std::string_view column) const;
   /// The field as a number; NaN where it is empty. A field that is not a number was refused by CsvTable::read.
   [[nodiscard]] double number(std::string_view column) const;
+  /// The parts of a field that holds a list, "a|b|c"; none where it is empty.
+  [[nodiscard]] std::vector<std::string> list(std::string_view column) const;
   [[nodiscard]] std::string where() const;  ///< "file:line"
 
  private:
