@@ -71,6 +71,23 @@ void check_volume(const Tank& tank, const TankView& view, std::vector<Check>& ch
                     significant(view.volume_L, 5) + " L of " + significant(brim, 5) + " L to the brim"});
 }
 
+/// The bath type's hard limits on what it holds, sodium and calcium among them; a step may not cross one, or
+/// go farther beyond it than the tank already is.
+void check_limits(const BathType& type, const TankView& before, const TankView& view,
+                  std::vector<Check>& checks) {
+  for (std::size_t q = 0; q < type.quantities.size(); ++q)
+    for (const bath::Window& window : type.windows) {
+      if (window.subject != type.quantities[q].id) continue;
+      const double level = view.quantity_g_per_L[q], was = before.quantity_g_per_L[q];
+      const bool over = level > window.stop_high && level > was,
+                 under = level < window.stop_low && level < was;
+      if (over || under)
+        checks.push_back({type.quantities[q].label, false, true,
+                          significant(level, 3) + " g/L, stop " + (over ? "above " : "below ") +
+                              significant(over ? window.stop_high : window.stop_low, 3)});
+    }
+}
+
 /// A tank that starts outside may stay there until its pH is trimmed, but no step may take it farther out.
 void check_pH(const Tank& tank, const BathType& type, double pH_at_start, const TankView& view,
               std::vector<Check>& checks) {
@@ -109,9 +126,8 @@ Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState
   std::stable_sort(amounts.begin(), amounts.end(),
                    [&](const Portioned& a, const Portioned& b) { return place(type, a) < place(type, b); });
   Steps result;
-  const auto start = chemistry.speciate(state);
-  if (!start) return start.problems();
-  const double pH_at_start = start->pH();
+  const auto at_start = chemistry.quick_view(state);
+  if (!at_start) return at_start.problems();
   for (const Portioned& one : amounts) {
     const TankState whole = Chemistry::after(state, *one.brings, one.kg);
     const auto before = chemistry.speciate(state), after = chemistry.speciate(whole);
@@ -137,7 +153,8 @@ Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState
       if (!predicted) return predicted.problems();
       step.predicted = *std::move(predicted);
       check_volume(tank, step.predicted, step.checks);
-      check_pH(tank, type, pH_at_start, step.predicted, step.checks);
+      check_pH(tank, type, at_start->pH, step.predicted, step.checks);
+      check_limits(type, *at_start, step.predicted, step.checks);
       check_solids(chemistry, step.predicted, step.checks);
       result.steps.push_back(std::move(step));
     }

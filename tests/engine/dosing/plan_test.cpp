@@ -147,6 +147,23 @@ TEST_CASE("an acid and an alkali are never dosed together", "[unit][dosing]") {
   CHECK(plan.unmet.empty());
 }
 
+TEST_CASE("a bath type's hard limits hold for what nobody aims at", "[unit][dosing]") {
+  // Chloride from table salt alone: more sodium than the 15 g/L at which Watts nickel stops.
+  bath::Tank tank = with_shelf({"nickel-sulfate", "boric-acid", "water"});
+  tank.shelf.push_back(
+      {demo::stock("sodium-chloride"), 0.3, bath::ShelfItem::Per::kilogram, std::nullopt, std::nullopt});
+  std::erase_if(tank.aims,
+                [](const bath::Aim& aim) { return aim.quantity != "Cl^-" && aim.quantity != "NiCl2.6H2O"; });
+  tank.aims.front() = {"Cl^-", 40, 35, 45};
+  const dosing::Plan plan = planned(demo::state(200, 20, 35, 4.2, 2300), tank).plans.front();
+  CHECK_FALSE(plan.feasible);
+  bool said = false;
+  for (const dosing::Step& step : plan.steps)
+    for (const dosing::Check& check : step.checks)
+      said = said || (check.name == "sodium" && !check.ok && check.stops);
+  CHECK(said);
+}
+
 TEST_CASE("a tank that starts outside its pH stops can be brought back", "[unit][dosing]") {
   const dosing::Plan acid = planned(demo::state(270, 48, 40, 2.9)).plans.front();
   CHECK(acid.feasible);
