@@ -31,7 +31,7 @@ Fields fields_of(StatedBath& bath) {
   bw_bath_type& head = bath.head;
   texts = {&head.id, &head.name, &head.version, &head.author, &head.licence, &head.summary, &head.validity};
   numbers = {&head.min_C, &head.max_C, &head.max_ionic_strength_mol_per_kg};
-  codes = {&head.convention};
+  codes = {&head.convention, &head.acid_set};
   for (bw_source& row : bath.sources) texts.insert(texts.end(), {&row.key, &row.citation, &row.terms});
   for (bw_component& row : bath.components) texts.push_back(&row.species), codes.push_back(&row.found_by);
   for (auto* terms : {&bath.nickel, &bath.chloride_ion, &bath.effects}) {
