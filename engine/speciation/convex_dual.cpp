@@ -217,19 +217,24 @@ void cold_start(Workspace& w) {
   // logarithm.
   const auto scale = [&](double x_proton, int sweeps) {
     w.x(w.proton) = x_proton;
+    Vector amount = amounts(w);
     for (int sweep = 0; sweep < sweeps; ++sweep)
       for (Index i = 0; i < n; ++i) {
         if (i == w.proton) continue;
         double sum = 0, weighted = 0;
-        const Vector amount = amounts(w);
         for (Index j = 0; j < w.count(); ++j)
           if (w.A(i, j) > 0) {
             sum += w.A(i, j) * amount(j);
             weighted += w.A(i, j) * w.A(i, j) * amount(j);
           }
-        w.x(i) += std::log(wanted(i) / sum) * sum / weighted;
+        const double step = std::log(wanted(i) / sum) * sum / weighted;
+        w.x(i) += step;
+        // Only the species that hold it move; most hold it once.
+        const double once = std::exp(step);
+        for (Index j = 0; j < w.count(); ++j)
+          if (w.A(i, j) != 0) amount(j) *= w.A(i, j) == 1 ? once : std::exp(w.A(i, j) * step);
       }
-    return Vector(w.A * amounts(w))(w.proton) - w.total(w.proton);
+    return w.A.row(w.proton).dot(amount) - w.total(w.proton);
   };
   for (Phase& phase : w.phases) {
     if (phase.kind != Phase::Kind::ph) continue;
@@ -245,7 +250,7 @@ void cold_start(Workspace& w) {
   }
   double low = -20 * std::numbers::ln10, high = 3 * std::numbers::ln10;  // pH 20 to -3
   const Vector start = w.x;
-  for (int halving = 0; halving < 12; ++halving) {
+  for (int halving = 0; halving < 8; ++halving) {  // to a tenth of a pH unit
     const double middle = (low + high) / 2;
     w.x = start;
     (scale(middle, 4) > 0 ? high : low) = middle;
