@@ -170,33 +170,36 @@ Result<Equilibrium> Chemistry::speciate(const TankState& state) const {
 }
 
 Result<TankView> Chemistry::quick_view(const TankState& state) const {
-  const Prepared& p = *prepared_;
-  const auto now = p.working.solve(task_for(state));
+  const auto now = working().solve(task_for(state)), cold = idle().solve(task_for(state));
   if (!now) return now.problems();
-  const auto cold = p.idle.solve(task_for(state));
   if (!cold) return cold.problems();
+  return view_of(state, *now, *cold);
+}
+
+TankView Chemistry::view_of(const TankState& state, const Equilibrium& now, const Equilibrium& cold) const {
+  const Prepared& p = *prepared_;
   TankView view;
   view.volume_L = volume_L(state);
   view.density_kg_per_L = density(state).v;
-  view.pH = now->pH();
-  view.ionic_strength = now->ionic_strength;
-  view.water_activity = std::exp(now->ln_water_activity);
+  view.pH = now.pH();
+  view.ionic_strength = now.ionic_strength;
+  view.water_activity = std::exp(now.ln_water_activity);
   for (const Quantity& quantity : p.type.quantities)
     view.quantity_g_per_L.push_back(quantity_g_per_L(quantity, state));
   for (std::size_t j = 0; j < p.system->species().size(); ++j)
-    view.species.push_back({p.system->species()[j].name, now->molality[j], std::exp(now->ln_gamma[j]),
-                            now->ln_activity[j] / std::numbers::ln10});
+    view.species.push_back({p.system->species()[j].name, now.molality[j], std::exp(now.ln_gamma[j]),
+                            now.ln_activity[j] / std::numbers::ln10});
   for (std::size_t i = 0; i < p.watched.size(); ++i) {
     const std::size_t k = p.watched[i];
-    if (!std::isfinite(now->saturation_index[k])) continue;  // an ion of it is not there at all
+    if (!std::isfinite(now.saturation_index[k])) continue;  // an ion of it is not there at all
     const speciation::SystemSolid& solid = p.system->solids()[k];
     Headroom room;
     room.solid = solid.name;
     room.formula = solid.formula;
     room.sign_in_tank = p.type.solids[i].sign_in_tank;
     room.slow = solid.slow;
-    room.working_log10 = -now->saturation_index[k];
-    room.idle_log10 = -cold->saturation_index[k];
+    room.working_log10 = -now.saturation_index[k];
+    room.idle_log10 = -cold.saturation_index[k];
     room.covers_working = p.working.covers(k);
     room.covers_idle = p.idle.covers(k);
     view.headroom.push_back(std::move(room));
@@ -205,12 +208,11 @@ Result<TankView> Chemistry::quick_view(const TankState& state) const {
 }
 
 Result<TankView> Chemistry::view(const TankState& state) const {
-  auto quick = quick_view(state);
-  if (!quick) return quick;
-  TankView view = *std::move(quick);
   const Prepared& p = *prepared_;
-  const auto now = p.working.solve(task_for(state));
+  const auto now = p.working.solve(task_for(state)), cold = p.idle.solve(task_for(state));
   if (!now) return now.problems();
+  if (!cold) return cold.problems();
+  TankView view = view_of(state, *now, *cold);
 
   for (Headroom& room : view.headroom) {
     const std::size_t k = *p.system->solid(room.solid);

@@ -130,9 +130,12 @@ const Equilibria& Equilibria::built_in(activity::Convention convention) {
     assert(resolved);
     return all;
   };
-  static const Equilibria interaction = build(activity::Convention::interaction);
+  if (convention == activity::Convention::interaction) {
+    static const Equilibria interaction = build(activity::Convention::interaction);
+    return interaction;
+  }
   static const Equilibria association = build(activity::Convention::association);
-  return convention == activity::Convention::interaction ? interaction : association;
+  return association;
 }
 
 Result<Equilibria> Equilibria::with(const std::vector<StatedSpecies>& species,

@@ -100,6 +100,8 @@ class Chemistry {
 
  private:
   struct Prepared;
+  [[nodiscard]] TankView view_of(const TankState& state, const speciation::Equilibrium& now,
+                                 const speciation::Equilibrium& cold) const;
   std::shared_ptr<const Prepared> prepared_;
 };
 
