@@ -62,6 +62,12 @@ Coverage coverage(const Solver& solver, const Equilibrium& answer) {
         break;
     }
   }
+  constexpr double near_C = 5;
+  if (std::abs(solver.temperature().v - 25) > near_C)
+    for (std::size_t j = 0; j < answer.molality.size(); ++j)
+      if (answer.molality[j] > noticed && !solver.system().species()[j].constant.has_dH)
+        found.warnings.push_back(solver.system().species()[j].name +
+                                 ": no enthalpy of formation published; its constant at 25 degC taken");
   if (!answer.stable) {
     found.warnings.emplace_back(
         "the activity model is outside its range here: its Gibbs energy no longer curves upward");
