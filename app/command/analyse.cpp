@@ -39,19 +39,11 @@ int run(const Context& context, const std::string& tank_path, const std::string&
 void add_analyse(CLI::App& program, Context& context, Action& action) {
   auto* verb =
       program.add_subcommand("analyse", "readings to concentrations with their uncertainty")->fallthrough();
-  auto tank = std::make_shared<std::string>();
-  auto readings = std::make_shared<std::string>();
-  verb->add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
-  verb->add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")
-      ->required()
-      ->check(CLI::ExistingFile);
+  add_tank_and_readings(*verb, context, action, run);
   add_signature(*verb, context);
   verb->footer(
       "Example: bathwright analyse baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
       "With --log the analysis is logged.\n");
-  verb->callback([&context, &action, tank, readings] {
-    action = [&context, tank, readings] { return run(context, *tank, *readings); };
-  });
 }
 
 }  // namespace bathwright::command

@@ -132,19 +132,11 @@ int run(const Context& context, const std::string& tank_path, const std::string&
 void add_dose(CLI::App& program, Context& context, Action& action) {
   auto* verb =
       program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
-  auto tank = std::make_shared<std::string>();
-  auto readings = std::make_shared<std::string>();
-  verb->add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
-  verb->add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")
-      ->required()
-      ->check(CLI::ExistingFile);
+  add_tank_and_readings(*verb, context, action, run);
   add_signature(*verb, context);
   verb->footer(
       "Example: bathwright dose baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
       "With --log the analysis and the plan are logged; additions logged since are told.\n");
-  verb->callback([&context, &action, tank, readings] {
-    action = [&context, tank, readings] { return run(context, *tank, *readings); };
-  });
 }
 
 }  // namespace bathwright::command

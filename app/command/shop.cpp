@@ -74,4 +74,17 @@ Result<bath::TankState> state_at_aims(const Shop& shop) {
   return shop.chemistry.state_from(g_per_L, pH->aim, shop.tank.working_volume, shop.tank.temperature);
 }
 
+void add_tank_and_readings(CLI::App& verb, Context& context, Action& action,
+                           int (*run)(const Context&, const std::string& tank, const std::string& readings)) {
+  auto tank = std::make_shared<std::string>();
+  auto readings = std::make_shared<std::string>();
+  verb.add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
+  verb.add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")
+      ->required()
+      ->check(CLI::ExistingFile);
+  verb.callback([&context, &action, run, tank, readings] {
+    action = [&context, run, tank, readings] { return run(context, *tank, *readings); };
+  });
+}
+
 }  // namespace bathwright::command

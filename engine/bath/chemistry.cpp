@@ -2,7 +2,6 @@
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/bath/chemistry.hpp>
-#include <bathwright/matter/water.hpp>
 #include <bathwright/speciation/coverage.hpp>
 #include <cmath>
 #include <cstdio>
@@ -141,6 +140,7 @@ Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Cels
 
 const BathType& Chemistry::type() const { return prepared_->type; }
 const std::vector<std::string>& Chemistry::components() const { return prepared_->system->components(); }
+std::size_t Chemistry::counter_ion() const { return prepared_->counter_ion; }
 const Solver& Chemistry::working() const { return prepared_->working; }
 const Solver& Chemistry::idle() const { return prepared_->idle; }
 Celsius Chemistry::working_temperature() const { return prepared_->working.temperature(); }
@@ -393,11 +393,6 @@ TankState Chemistry::after(TankState state, const Brings& brings, double kg) {
   for (std::size_t i = 0; i < state.component_mol.size(); ++i)
     state.component_mol[i] += kg * brings.component_mol[i];
   state.water_kg += kg * brings.water_kg;
-  return state;
-}
-
-TankState Chemistry::after_water(TankState state, units::Litres water) const {
-  state.water_kg += water.v * matter::water_density({20}).v;
   return state;
 }
 

@@ -45,15 +45,11 @@ struct AcidDemand {
 };
 
 Result<AcidDemand> acid_demand(const Chemistry& chemistry, const TankState& state, double pH) {
-  std::size_t counter_ion = 0;
-  for (const bath::Component& component : chemistry.type().components)
-    if (component.found_by == bath::FoundBy::charge)
-      counter_ion = *chemistry.working().system().component(component.species);
   const auto held_at = [&](double at) -> Result<double> {
     speciation::Task task;
     task.component_mol = state.component_mol;
     task.water_kg = state.water_kg;
-    task.pH = speciation::HeldPh{at, counter_ion};
+    task.pH = speciation::HeldPh{at, chemistry.counter_ion()};
     const auto answer = chemistry.working().solve(task);
     if (!answer) return answer.problems();
     return state.component_mol[0] + answer->held_ph_mol;

@@ -61,6 +61,7 @@ class Chemistry {
   [[nodiscard]] const BathType& type() const;
   /// Basis species the totals are counted in; H^+ first.
   [[nodiscard]] const std::vector<std::string>& components() const;
+  [[nodiscard]] std::size_t counter_ion() const;  ///< the component found by charge
   [[nodiscard]] const speciation::Solver& working() const;
   [[nodiscard]] const speciation::Solver& idle() const;
   [[nodiscard]] units::Celsius working_temperature() const;
@@ -95,8 +96,6 @@ class Chemistry {
 
   /// The state after `kg` of something is stirred in.
   [[nodiscard]] static TankState after(TankState state, const Brings& brings, double kg);
-  /// The state after litres of pure water are added.
-  [[nodiscard]] TankState after_water(TankState state, units::Litres water) const;
 
  private:
   struct Prepared;
