@@ -9,10 +9,16 @@
 namespace bathwright::activity {
 namespace {
 
-std::vector<int> charges(std::span<const Solute> solutes) {
-  std::vector<int> z;
-  for (const Solute& solute : solutes) z.push_back(solute.charge);
-  return z;
+Kinds kinds_by_charge(std::span<const Solute> solutes) {
+  std::vector<int> charge;
+  for (const Solute& solute : solutes) charge.push_back(solute.charge);
+  return kinds_by(solutes, charge);
+}
+
+Kinds kinds_by_charge_and_size(std::span<const Solute> solutes, const std::vector<double>& size_pm) {
+  std::vector<std::pair<int, double>> key;
+  for (std::size_t i = 0; i < solutes.size(); ++i) key.emplace_back(solutes[i].charge, size_pm[i]);
+  return kinds_by(solutes, key);
 }
 
 /// f(I) of ln g = z^2 f, with its derivative and integral from 0 to I.
@@ -44,9 +50,12 @@ double sigma(double x) {
 }  // namespace
 
 DaviesModel::DaviesModel(std::span<const Solute> solutes, units::Celsius t)
-    : charge_(charges(solutes)), slope_ln_(3 * osmotic_slope(t)) {}
+    : DaviesModel(kinds_by_charge(solutes), t) {}
 
-double DaviesModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma) const {
+DaviesModel::DaviesModel(Kinds kinds, units::Celsius t)
+    : ActivityModel(std::move(kinds.of)), charge_(std::move(kinds.charge)), slope_ln_(3 * osmotic_slope(t)) {}
+
+double DaviesModel::evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const {
   const double I = ionic_strength(molality, charge_);
   const DaviesTerm f = davies(slope_ln_, I);
   for (std::size_t i = 0; i < charge_.size(); ++i) ln_gamma[i] = charge_[i] * charge_[i] * f.value;
@@ -54,20 +63,31 @@ double DaviesModel::evaluate(std::span<const double> molality, std::span<double>
   return -water_kg_per_mol * (total + 2 * I * f.value - 2 * f.integral);
 }
 
-double DaviesModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma,
-                             std::span<const std::uint32_t> columns, std::span<double> derivative) const {
+double DaviesModel::evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
+                                   std::span<double> derivative) const {
   const double slope = davies(slope_ln_, ionic_strength(molality, charge_)).slope;
-  for (std::size_t i = 0, at = 0; i < charge_.size(); ++i)
-    for (const std::uint32_t j : columns)
-      derivative[at++] = slope * charge_[i] * charge_[i] * charge_[j] * charge_[j] / 2;
-  return evaluate(molality, ln_gamma);
+  std::size_t at = 0;
+  for (const int z : charge_)
+    for (const int y : charge_) derivative[at++] = slope * z * z * y * y / 2;
+  return evaluate_kinds(molality, ln_gamma);
 }
 
 DebyeHueckelModel::DebyeHueckelModel(std::span<const Solute> solutes, units::Celsius t)
-    : charge_(charges(solutes)), slope_ln_(3 * osmotic_slope(t)) {
+    : DebyeHueckelModel(kinds_by_charge_and_size(solutes, sizes(solutes).pm), sizes(solutes), t) {}
+
+DebyeHueckelModel::DebyeHueckelModel(const Kinds& kinds, Sizes sizes, units::Celsius t)
+    : ActivityModel(kinds.of),
+      charge_(kinds.charge),
+      slope_ln_(3 * osmotic_slope(t)),
+      notes_(std::move(sizes.notes)) {
+  const double b = size_slope_per_pm(t);
+  for (const std::uint32_t solute : kinds.example) ba_.push_back(b * sizes.pm[solute]);
+}
+
+DebyeHueckelModel::Sizes DebyeHueckelModel::sizes(std::span<const Solute> solutes) {
   constexpr double default_size_pm = 400;  // near the mean of Kielland's table
   const data::CsvTable table = data::built_in_table("activity/ion_size.csv", {"size_pm"});
-  const double b = size_slope_per_pm(t);
+  Sizes found;
   for (std::size_t i = 0; i < solutes.size(); ++i) {
     double size = std::nan("");
     for (std::size_t row = 0; row < table.size() && std::isnan(size); ++row)
@@ -75,16 +95,17 @@ DebyeHueckelModel::DebyeHueckelModel(std::span<const Solute> solutes, units::Cel
     if (std::isnan(size)) {
       size = default_size_pm;
       if (solutes[i].charge != 0)
-        notes_.push_back({InteractionNote::Kind::missing,
-                          {static_cast<std::uint32_t>(i)},
-                          0,
-                          solutes[i].name + ": no ion size published; 400 pm taken"});
+        found.notes.push_back({InteractionNote::Kind::missing,
+                               {static_cast<std::uint32_t>(i)},
+                               0,
+                               solutes[i].name + ": no ion size published; 400 pm taken"});
     }
-    ba_.push_back(b * size);
+    found.pm.push_back(size);
   }
+  return found;
 }
 
-double DebyeHueckelModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma) const {
+double DebyeHueckelModel::evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const {
   const double s = std::sqrt(ionic_strength(molality, charge_));
   double osmotic = 0;
   for (std::size_t i = 0; i < charge_.size(); ++i) {
@@ -95,15 +116,15 @@ double DebyeHueckelModel::evaluate(std::span<const double> molality, std::span<d
   return -water_kg_per_mol * osmotic;
 }
 
-double DebyeHueckelModel::evaluate(std::span<const double> molality, std::span<double> ln_gamma,
-                                   std::span<const std::uint32_t> columns,
-                                   std::span<double> derivative) const {
+double DebyeHueckelModel::evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
+                                         std::span<double> derivative) const {
   const double s = std::sqrt(std::max(ionic_strength(molality, charge_), 1e-30));
-  for (std::size_t i = 0, at = 0; i < charge_.size(); ++i) {
+  std::size_t at = 0;
+  for (std::size_t i = 0; i < charge_.size(); ++i) {
     const double slope = -slope_ln_ * charge_[i] * charge_[i] / (2 * s * (1 + ba_[i] * s) * (1 + ba_[i] * s));
-    for (const std::uint32_t j : columns) derivative[at++] = slope * charge_[j] * charge_[j] / 2;
+    for (const int y : charge_) derivative[at++] = slope * y * y / 2;
   }
-  return evaluate(molality, ln_gamma);
+  return evaluate_kinds(molality, ln_gamma);
 }
 
 }  // namespace bathwright::activity

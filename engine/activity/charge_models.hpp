@@ -4,6 +4,8 @@
 #include <bathwright/activity/model.hpp>
 #include <bathwright/units/quantity.hpp>
 
+#include "kinds.hpp"
+
 namespace bathwright::activity {
 
 /// log10 g = -A z^2 (sqrt(I)/(1+sqrt(I)) - 0.3 I); a neutral solute gives exactly 0. The bracket is held at
@@ -12,15 +14,16 @@ namespace bathwright::activity {
 class DaviesModel final : public ActivityModel {
  public:
   DaviesModel(std::span<const Solute> solutes, units::Celsius t);
-  double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const override;
-  double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
-                  std::span<const std::uint32_t> columns, std::span<double> derivative) const override;
+  double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const override;
+  double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
+                        std::span<double> derivative) const override;
   ModelKind kind() const override { return ModelKind::davies; }
   std::span<const InteractionNote> notes() const override { return {}; }
   double trusted_ionic_strength() const override { return 0.5; }
 
  private:
-  std::vector<int> charge_;
+  DaviesModel(Kinds kinds, units::Celsius t);
+  std::vector<int> charge_;  ///< per kind
   double slope_ln_;
 };
 
@@ -31,16 +34,23 @@ class DaviesModel final : public ActivityModel {
 class DebyeHueckelModel final : public ActivityModel {
  public:
   DebyeHueckelModel(std::span<const Solute> solutes, units::Celsius t);
-  double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const override;
-  double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
-                  std::span<const std::uint32_t> columns, std::span<double> derivative) const override;
+  double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const override;
+  double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
+                        std::span<double> derivative) const override;
   ModelKind kind() const override { return ModelKind::debye_huckel; }
   std::span<const InteractionNote> notes() const override { return notes_; }
   double trusted_ionic_strength() const override { return 0.1; }
 
  private:
-  std::vector<int> charge_;
-  std::vector<double> ba_;  ///< B times the size, kg^0.5 mol^-0.5
+  struct Sizes {
+    std::vector<double> pm;  ///< per solute
+    std::vector<InteractionNote> notes;
+  };
+  static Sizes sizes(std::span<const Solute> solutes);
+  DebyeHueckelModel(const Kinds& kinds, Sizes sizes, units::Celsius t);
+
+  std::vector<int> charge_;  ///< per kind
+  std::vector<double> ba_;   ///< per kind: B times the size, kg^0.5 mol^-0.5
   double slope_ln_;
   std::vector<InteractionNote> notes_;
 };

@@ -1,6 +1,9 @@
 // The ion-interaction model of Pitzer with unsymmetrical mixing.
 #pragma once
 
+#include "block_matrix.hpp"
+#include "kinds.hpp"
+#include "mixing_terms.hpp"
 #include "pitzer_parameters.hpp"
 
 namespace bathwright::activity {
@@ -12,44 +15,47 @@ namespace bathwright::activity {
 ///          = 1.2
 /// ln gamma is its gradient, the derivatives are its (symmetric) second derivatives, and the osmotic
 /// coefficient follows by Gibbs-Duhem. Ions outside the model (see PitzerParameters) take no part in G.
+///
+/// With W_kl(I) = beta0 + sum beta_a g(alpha_a s) + theta + E-theta + lambda as one symmetric matrix over
+/// kinds, half of whose quadratic form is the binary part of G, each sum is a product of matrix and vector.
 class PitzerModel final : public ActivityModel {
  public:
-  PitzerModel(std::span<const Solute> solutes, units::Celsius t, PitzerParameters parameters);
-  double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const override;
-  double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
-                  std::span<const std::uint32_t> columns, std::span<double> derivative) const override;
+  PitzerModel(std::span<const Solute> solutes, units::Celsius t, const PitzerParameters& parameters);
+  double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const override;
+  double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
+                        std::span<double> derivative) const override;
   ModelKind kind() const override { return ModelKind::pitzer; }
-  std::span<const InteractionNote> notes() const override { return p_.notes; }
+  std::span<const InteractionNote> notes() const override { return notes_; }
   double trusted_ionic_strength() const override;
 
  private:
-  /// A binary term with its alphas replaced by positions in alphas_ (none: no_alpha).
-  struct Pair {
-    std::uint32_t cation, anion;
-    double beta0, beta1, beta2, c;
-    std::uint8_t alpha1, alpha2;
+  /// What falls off with the ionic strength as g(alpha s).
+  struct Decaying {
+    double alpha;
+    BlockMatrix beta;
   };
-  struct LikePairTerm {
-    std::uint32_t i, j;
-    double theta;
-    std::uint8_t mixing;  ///< position in mixed_charges_ (none: equal charges)
+  /// Kinds of one charge, which stand side by side.
+  struct ChargeClass {
+    std::size_t first, last;
   };
   struct Sums;  ///< what one pass over the solution yields
 
-  template <bool second_order>
+  PitzerModel(const Kinds& kinds, units::Celsius t, const PitzerParameters& parameters);
   double pass(std::span<const double> molality, std::span<double> ln_gamma, Sums& sums) const;
 
-  static constexpr std::uint8_t none = 255;
-  static constexpr std::size_t max_alphas = 8, max_mixed = 32;
-
   double a_phi_;
-  std::vector<int> charge_;
-  std::vector<std::uint8_t> inside_;  ///< 0 for the ions outside the model
-  std::vector<double> alphas_;
-  std::vector<std::pair<int, int>> mixed_charges_;
-  std::vector<Pair> pairs_;
-  std::vector<LikePairTerm> like_pairs_;
-  PitzerParameters p_;
+  std::size_t inside_;              ///< kinds before this one take part in the model
+  std::vector<double> z_, z2_;      ///< per kind: |charge| and its square; 0 outside the model
+  std::vector<double> outside_z2_;  ///< per kind: the square of the charge outside the model, else 0
+  std::vector<ChargeClass> classes_;
+  MixingTerms mixing_;
+  BlockMatrix constant_;  ///< beta0, theta, lambda
+  BlockMatrix c_;         ///< C_ca
+  std::vector<Decaying> decaying_;
+  std::vector<Triplet> triplets_;  ///< over kinds
+  std::vector<InteractionNote> notes_;
+
+  static constexpr std::size_t max_alphas = 8, max_classes = 24;
 };
 
 }  // namespace bathwright::activity

@@ -111,19 +111,18 @@ double Workspace::activity_coefficients(const Vector& molality, Vector& ln_g) {
 
 double Workspace::activity_coefficients(const Vector& molality, Vector& ln_g,
                                         const std::vector<Index>& columns, Matrix& derivative) {
+  const auto kind = model_->kind_of();
+  const std::size_t kinds = model_->kinds();
+  std::vector<double> in_kind(kinds, 0), ln_gamma_of_kind(kinds), by_kind(kinds * kinds);
   for (std::size_t j = 0; j < species.size(); ++j)
-    full_molality_[species[j]] = molality(static_cast<Index>(j));
-  std::vector<std::uint32_t> full_columns;
-  for (const Index j : columns)
-    full_columns.push_back(static_cast<std::uint32_t>(species[static_cast<std::size_t>(j)]));
-  full_derivative_.resize(full_ln_gamma_.size() * columns.size());
-  const double ln_water = model_->evaluate(full_molality_, full_ln_gamma_, full_columns, full_derivative_);
+    in_kind[kind[species[j]]] += molality(static_cast<Index>(j));
+  const double ln_water = model_->evaluate_kinds(in_kind, ln_gamma_of_kind, by_kind);
   derivative.resize(count(), static_cast<Index>(columns.size()));
   for (std::size_t j = 0; j < species.size(); ++j) {
-    ln_g(static_cast<Index>(j)) = full_ln_gamma_[species[j]];
+    ln_g(static_cast<Index>(j)) = ln_gamma_of_kind[kind[species[j]]];
     for (std::size_t c = 0; c < columns.size(); ++c)
       derivative(static_cast<Index>(j), static_cast<Index>(c)) =
-          full_derivative_[species[j] * columns.size() + c];
+          by_kind[kind[species[j]] * kinds + kind[species[static_cast<std::size_t>(columns[c])]]];
   }
   return ln_water;
 }

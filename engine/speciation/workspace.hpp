@@ -65,7 +65,7 @@ class Workspace {
 
  private:
   const activity::ActivityModel* model_;
-  std::vector<double> full_molality_, full_ln_gamma_, full_derivative_;
+  std::vector<double> full_molality_, full_ln_gamma_;
 };
 
 }  // namespace bathwright::speciation

@@ -39,6 +39,18 @@ inline Coefficients coefficients(const ActivityModel& model, const Numbers& mola
   return found;
 }
 
+/// d ln gamma_i / d m_j of solutes, n x n, row by row.
+inline Numbers derivatives(const ActivityModel& model, const Numbers& molality) {
+  const auto kind = model.kind_of();
+  Numbers in_kind(model.kinds(), 0), ln_gamma(model.kinds()), by_kind(model.kinds() * model.kinds());
+  for (std::size_t i = 0; i < kind.size(); ++i) in_kind[kind[i]] += molality[i];
+  model.evaluate_kinds(in_kind, ln_gamma, by_kind);
+  Numbers derivative;
+  for (const std::uint16_t k : kind)
+    for (const std::uint16_t l : kind) derivative.push_back(by_kind[k * model.kinds() + l]);
+  return derivative;
+}
+
 /// ln of the mean activity coefficient of a salt of nu_cation cations (the first solute) and nu_anion anions.
 inline double ln_mean(const ActivityModel& model, double salt_molality, double nu_cation, double nu_anion) {
   const Numbers ln_gamma =

@@ -2,6 +2,7 @@
 #include <bathwright/activity/debye_huckel_slope.hpp>
 #include <bathwright/activity/unsymmetrical_mixing.hpp>
 
+#include "mixing_terms.hpp"
 #include "solutions.hpp"
 
 using namespace bathwright::activity;
@@ -73,4 +74,36 @@ TEST_CASE("E-theta is the same for both orders and signs, and zero for equal cha
   const double of_1_2 = unsymmetrical_mixing(1, 2, a_phi, 1).value;
   CHECK(unsymmetrical_mixing(2, 1, a_phi, 1).value == Approx(of_1_2).margin(1e-15).epsilon(0));
   CHECK(unsymmetrical_mixing(-1, -2, a_phi, 1).value == Approx(of_1_2).margin(1e-15).epsilon(0));
+}
+
+TEST_CASE("the table of J agrees with its series", "[unit]") {
+  for (double ln_x = -12; ln_x < 9; ln_x += 0.0173) {
+    const double x = std::exp(ln_x);
+    const JFunction series = j_function(x);
+    const LogJ table = j_of_log(ln_x);
+    INFO("x = " << x);
+    // 1e-15: rounding of the series itself, a difference of numbers near 1, where J is below 1e-6.
+    CHECK(table.value == Approx(series.value).margin(1e-15).epsilon(1e-9));
+    CHECK(table.first == Approx(x * series.first).margin(0).epsilon(1e-7));
+    CHECK(table.second == Approx(x * (series.first + x * series.second)).margin(1e-6).epsilon(1e-5));
+  }
+}
+
+TEST_CASE("all pairs of charges at once are those one by one", "[unit]") {
+  const std::vector<int> charges{-4, -2, -1, 0, 1, 2, 3};
+  const double a_phi = osmotic_slope(room);
+  const MixingTerms terms(charges, a_phi);
+  REQUIRE(terms.pairs().size() == 6);
+  std::vector<MixingTerm> found(terms.pairs().size());
+  for (const double I : {1e-12, 1e-4, 0.3, 8.0}) {
+    terms.evaluate(I, found);
+    for (std::size_t k = 0; k < found.size(); ++k) {
+      const auto [i, j] = terms.pairs()[k];
+      const MixingTerm one = unsymmetrical_mixing(charges[i], charges[j], a_phi, I);
+      INFO(charges[i] << " with " << charges[j] << " at " << I);
+      CHECK(found[k].value == Approx(one.value).margin(0).epsilon(1e-8));
+      CHECK(found[k].first == Approx(one.first).margin(0).epsilon(1e-6));
+      CHECK(found[k].second == Approx(one.second).margin(0).epsilon(1e-4));
+    }
+  }
 }

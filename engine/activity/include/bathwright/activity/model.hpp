@@ -45,23 +45,40 @@ struct InteractionNote {
 
 /// One model, prepared for a fixed list of solutes at one temperature. Immutable: any number of threads may
 /// use it at once. No call allocates.
+///
+/// A model sees solutes by *kind*: solutes of one charge with the same parameters towards everything have one
+/// ln gamma, and only the sum of their molalities acts on others. A bath of a hundred complexes about which
+/// nothing is published has some thirty kinds, and whoever needs derivatives works with those.
 class ActivityModel {
  public:
   virtual ~ActivityModel() = default;
 
   /// molality (n), mol/kg, >= 0 -> ln_gamma (n). Returns ln of the activity of water.
-  virtual double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const = 0;
+  double evaluate(std::span<const double> molality, std::span<double> ln_gamma) const;
 
-  /// Also the derivatives d ln gamma_i / d m_j for every solute i and the solutes j listed in `columns`,
-  /// row by row: derivative[i * columns.size() + c].
-  virtual double evaluate(std::span<const double> molality, std::span<double> ln_gamma,
-                          std::span<const std::uint32_t> columns, std::span<double> derivative) const = 0;
+  /// kind_of()[i] is the kind of solute i, below kinds().
+  [[nodiscard]] std::span<const std::uint16_t> kind_of() const { return kind_of_; }
+  [[nodiscard]] std::size_t kinds() const { return kinds_; }
+
+  /// The same with molalities summed over each kind (kinds()) -> ln gamma of each kind.
+  virtual double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const = 0;
+
+  /// Also d ln gamma_k / d m_l of all kinds, derivative[k * kinds() + l].
+  virtual double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
+                                std::span<double> derivative) const = 0;
 
   [[nodiscard]] virtual ModelKind kind() const = 0;
   [[nodiscard]] virtual std::span<const InteractionNote> notes() const = 0;
   /// The ionic strength above which the model as such is not to be trusted, mol/kg (infinite: decided by
   /// notes).
   [[nodiscard]] virtual double trusted_ionic_strength() const = 0;
+
+ protected:
+  explicit ActivityModel(std::vector<std::uint16_t> kind_of);
+
+ private:
+  std::vector<std::uint16_t> kind_of_;
+  std::size_t kinds_;
 };
 
 /// The most solutes a model takes; a bath type may list at most this many species.
