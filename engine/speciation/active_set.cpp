@@ -1,5 +1,6 @@
 #include "active_set.hpp"
 
+#include <array>
 #include <cmath>
 
 namespace bathwright::speciation {
@@ -20,25 +21,30 @@ double ln_saturation(const Workspace& w, const Phase& phase) {
 
 bool let_in(Workspace& w, std::size_t entering, WaterActivity water) {
   constexpr double negligible = 1e-9;
-  std::vector<std::size_t> active;
-  for (std::size_t k = 0; k < w.phases.size(); ++k)
-    if (w.phases[k].active) active.push_back(k);
+  std::array<std::size_t, most_rows> active{};
+  Index count = 0;
   const Vector wanted = condition_of(w.phases[entering], water);
-  Matrix S(wanted.size(), static_cast<Index>(active.size()));
-  for (std::size_t c = 0; c < active.size(); ++c)
-    S.col(static_cast<Index>(c)) = condition_of(w.phases[active[c]], water);
-  if (!active.empty()) {
+  for (std::size_t k = 0; k < w.phases.size(); ++k)
+    if (w.phases[k].active) {
+      if (count == wanted.size()) return false;  // more conditions than unknowns
+      active[static_cast<std::size_t>(count++)] = k;
+    }
+  if (count > 0) {
+    Table S(wanted.size(), count);
+    for (Index c = 0; c < count; ++c)
+      S.col(c) = condition_of(w.phases[active[static_cast<std::size_t>(c)]], water);
     const Vector mix = S.colPivHouseholderQr().solve(wanted);
-    if ((S * mix - wanted).lpNorm<Eigen::Infinity>() < negligible) {
+    if (Vector(S.lazyProduct(mix) - wanted).lpNorm<Eigen::Infinity>() < negligible) {
       // One mol of the entering phase takes `mix` mol of the active ones.
       std::size_t leaving = w.phases.size();
       double least = 0;
-      for (std::size_t c = 0; c < active.size(); ++c) {
-        const Phase& phase = w.phases[active[c]];
-        const double used = mix(static_cast<Index>(c));
+      for (Index c = 0; c < count; ++c) {
+        const Phase& phase = w.phases[active[static_cast<std::size_t>(c)]];
+        const double used = mix(c);
         if (used < negligible || phase.kind != Phase::Kind::precipitate) continue;
         const double lasts = phase.mol / used;
-        if (leaving == w.phases.size() || lasts < least) leaving = active[c], least = lasts;
+        if (leaving == w.phases.size() || lasts < least)
+          leaving = active[static_cast<std::size_t>(c)], least = lasts;
       }
       if (leaving == w.phases.size()) return false;
       w.phases[leaving].active = false;

@@ -1,40 +1,60 @@
 #include "convex_dual.hpp"
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 #include <numbers>
-#include <vector>
 
 #include "active_set.hpp"
+#include "elimination.hpp"
 
 namespace bathwright::speciation {
 namespace {
 
 constexpr double largest_ln_molality = 30;  // keeps sums finite wherever a trial step lands
 
-Vector amounts(const Workspace& w) {
-  return w.water_kg * w.ln_molality().array().min(largest_ln_molality).exp().matrix();
+/// mol of every species.
+void amounts(const Workspace& w, SpeciesVector& n, double highest = largest_ln_molality) {
+  w.molality(n, highest);
+  n *= w.water_kg;
+}
+
+Vector component_sums(const Workspace& w, const SpeciesVector& n) {
+  Vector sum = Vector::Zero(w.components() + 1);
+  for (Index j = 0; j < w.count(); ++j)
+    for (const auto* e = w.begin(j); e != w.end(j); ++e) sum(e->row) += e->value * n(j);
+  sum.conservativeResize(w.components());
+  return sum;
 }
 
 /// The directions x may move in without leaving the active conditions, and the rows that were given up for
 /// them.
 struct NullSpace {
-  Matrix Z;                   ///< components x free directions
-  std::vector<Index> pivots;  ///< per active phase, the row it limits
-  std::vector<std::size_t> active;
+  Table Z;                              ///< components x free directions
+  std::array<Index, most_rows> pivots;  ///< per active phase, the row it limits
+  std::array<std::size_t, most_rows> active;
+  Index rows = 0;  ///< active phases
   bool independent = true;
 };
 
-NullSpace null_space(const Workspace& w) {
-  NullSpace space;
-  for (std::size_t k = 0; k < w.phases.size(); ++k)
-    if (w.phases[k].active) space.active.push_back(k);
-  const auto rows = static_cast<Index>(space.active.size());
+void find_null_space(const Workspace& w, NullSpace& space) {
+  space.rows = 0;
+  space.independent = true;
   const Index n = w.components();
-  Matrix E(rows, n);
+  for (std::size_t k = 0; k < w.phases.size(); ++k)
+    if (w.phases[k].active) {
+      if (space.rows == n) {
+        space.independent = false;
+        return;
+      }
+      space.active[static_cast<std::size_t>(space.rows++)] = k;
+    }
+  const Index rows = space.rows;
+  if (rows == 0) return;
+  Table E(rows, n);
   for (Index r = 0; r < rows; ++r)
     E.row(r) = w.phases[space.active[static_cast<std::size_t>(r)]].condition.transpose();
-  std::vector<bool> taken(static_cast<std::size_t>(n), false);
+  std::array<bool, most_rows> taken{};
   for (Index r = 0; r < rows; ++r) {
     // The phase takes the place of the component it would use up first.
     Index pivot = -1;
@@ -46,15 +66,15 @@ NullSpace null_space(const Workspace& w) {
     }
     if (pivot < 0) {
       space.independent = false;
-      return space;
+      return;
     }
     taken[static_cast<std::size_t>(pivot)] = true;
-    space.pivots.push_back(pivot);
+    space.pivots[static_cast<std::size_t>(r)] = pivot;
     E.row(r) /= E(r, pivot);
     for (Index other = 0; other < rows; ++other)
       if (other != r && E(other, pivot) != 0) E.row(other) -= E(other, pivot) * E.row(r);
   }
-  space.Z = Matrix::Zero(n, n - rows);
+  space.Z.setZero(n, n - rows);
   Index column = 0;
   for (Index i = 0; i < n; ++i) {
     if (taken[static_cast<std::size_t>(i)]) continue;
@@ -62,14 +82,13 @@ NullSpace null_space(const Workspace& w) {
     for (Index r = 0; r < rows; ++r) space.Z(space.pivots[static_cast<std::size_t>(r)], column) = -E(r, i);
     ++column;
   }
-  return space;
 }
 
 /// Moves x onto the active conditions, changing only the pivot components.
 void meet_conditions(Workspace& w, const NullSpace& space) {
-  const auto rows = static_cast<Index>(space.active.size());
+  const Index rows = space.rows;
   if (rows == 0) return;
-  Matrix E(rows, rows);
+  Table E(rows, rows);
   Vector gap(rows);
   for (Index r = 0; r < rows; ++r) {
     const Phase& phase = w.phases[space.active[static_cast<std::size_t>(r)]];
@@ -90,9 +109,9 @@ Vector effective_total(const Workspace& w) {
 
 /// Multipliers: the amounts of the active phases that close the balances of their pivot rows.
 void set_phase_amounts(Workspace& w, const NullSpace& space, const Vector& open_balance) {
-  const auto rows = static_cast<Index>(space.active.size());
+  const Index rows = space.rows;
   if (rows == 0) return;
-  Matrix S(rows, rows);
+  Table S(rows, rows);
   Vector open(rows);
   for (Index r = 0; r < rows; ++r) {
     open(r) = open_balance(space.pivots[static_cast<std::size_t>(r)]);
@@ -104,48 +123,105 @@ void set_phase_amounts(Workspace& w, const NullSpace& space, const Vector& open_
   for (Index c = 0; c < rows; ++c) w.phases[space.active[static_cast<std::size_t>(c)]].mol = mol(c);
 }
 
+/// The gradient of the convex function and its curvature over the free directions.
+struct Slope {
+  Vector gradient, throughput;
+};
+
+/// f' = Z'(A n - b) and, in w.curvature (lower half, rows of `stride`), Z' A diag(n) A' Z.
+void differentiate(Workspace& w, const NullSpace& space, const SpeciesVector& n, const Vector& total,
+                   Slope& slope, std::size_t stride) {
+  const auto rows = static_cast<std::size_t>(w.components());
+  double* H = w.curvature.data();
+  std::fill_n(H, rows * stride, 0);
+  std::array<double, most_rows> sum{}, through{};
+  for (Index j = 0; j < w.count(); ++j) {
+    const double mol = n(j);
+    for (const auto *e = w.begin(j), *end = w.end(j); e != end && e->row < rows; ++e) {
+      const double weight = mol * e->value;
+      sum[e->row] += weight;
+      through[e->row] += std::abs(weight);
+      double* row = H + e->row * stride;
+      for (const auto* other = w.begin(j); other <= e; ++other) row[other->row] += weight * other->value;
+    }
+  }
+  const Index size = w.components();
+  slope.gradient.resize(size);
+  slope.throughput.resize(size);
+  for (Index i = 0; i < size; ++i) {
+    slope.gradient(i) = sum[static_cast<std::size_t>(i)] - total(i);
+    slope.throughput(i) = through[static_cast<std::size_t>(i)];
+  }
+  if (space.rows == 0) return;
+  Table full(size, size);
+  for (Index r = 0; r < size; ++r)
+    for (Index c = 0; c <= r; ++c)
+      full(r, c) = full(c, r) = H[static_cast<std::size_t>(r) * stride + static_cast<std::size_t>(c)];
+  const Table half = full.lazyProduct(space.Z);
+  const Table reduced = space.Z.transpose().lazyProduct(half);
+  for (Index r = 0; r < reduced.rows(); ++r)
+    for (Index c = 0; c <= r; ++c)
+      H[static_cast<std::size_t>(r) * stride + static_cast<std::size_t>(c)] = reduced(r, c);
+  slope.gradient = Vector(space.Z.transpose().lazyProduct(slope.gradient));
+  slope.throughput = Vector(space.Z.cwiseAbs().transpose().lazyProduct(slope.throughput));
+}
+
 /// Newton on the convex function within the active conditions; true once every free balance is within
 /// tolerance.
 bool newton(Workspace& w, const NullSpace& space, double tolerance, int& iterations) {
   constexpr int most = 200;
-  constexpr double longest_step = 4;
+  constexpr double longest_step = 4, damping = 1e-14, least_pivot = 1e-15;
   const Vector total = effective_total(w);
-  const Vector target = space.Z.transpose() * total;
-  const Vector scale_total = space.Z.cwiseAbs().transpose() * total.cwiseAbs();
-  Vector n = amounts(w);
+  Vector scale_total = total.cwiseAbs();
+  if (space.rows > 0) scale_total = Vector(space.Z.cwiseAbs().transpose().lazyProduct(scale_total));
+  const std::size_t stride = padded(static_cast<std::size_t>(w.components()));
+  SpeciesVector n;
+  amounts(w, n);
   double value = n.sum() - total.dot(w.x);
+  Slope slope;
+  Vector d, y, move, start;
   for (int step = 0; step < most; ++step) {
     ++iterations;
-    const Matrix R = space.Z.transpose() * w.A;  // free directions x species
-    const Vector gradient = R * n - target;
-    const Matrix H = R * n.asDiagonal() * R.transpose();
-    const Vector throughput = R.cwiseAbs() * n;
+    differentiate(w, space, n, total, slope, stride);
+    const Index free = slope.gradient.size();
     bool met = true;
-    for (Index i = 0; i < gradient.size(); ++i)
-      met = met && std::abs(gradient(i)) <=
-                       tolerance * std::max(scale_total(i) > 0 ? scale_total(i) : throughput(i), 1e-300);
+    for (Index i = 0; i < free; ++i)
+      met =
+          met && std::abs(slope.gradient(i)) <=
+                     tolerance * std::max(scale_total(i) > 0 ? scale_total(i) : slope.throughput(i), 1e-300);
     if (met) return true;
     // Unit diagonal before the factorisation: totals may differ by ten decades.
-    const Vector d = (H.diagonal().array() + 1e-290).sqrt().inverse().matrix();
-    Matrix scaled = d.asDiagonal() * H * d.asDiagonal();
-    scaled.diagonal().array() += 1e-14;
-    const Eigen::LLT<Matrix> factor(scaled);
-    if (factor.info() != Eigen::Success) return false;
-    Vector y = -(d.asDiagonal() * factor.solve(Vector(d.asDiagonal() * gradient)));
-    Vector move = space.Z * y;
+    double* H = w.curvature.data();
+    d.resize(free);
+    y.resize(free);
+    for (Index i = 0; i < free; ++i)
+      d(i) = 1 / std::sqrt(H[static_cast<std::size_t>(i) * (stride + 1)] + 1e-290);
+    for (Index r = 0; r < free; ++r) {
+      double* row = H + static_cast<std::size_t>(r) * stride;
+      for (Index c = 0; c <= r; ++c) row[c] *= d(r) * d(c);
+      row[r] += damping;
+      y(r) = -d(r) * slope.gradient(r);
+    }
+    if (!solve_positive_definite(H, y.data(), static_cast<std::size_t>(free), stride, least_pivot))
+      return false;
+    y.array() *= d.array();
+    if (space.rows == 0)
+      move = y;
+    else
+      move = space.Z.lazyProduct(y);
     const double longest = move.cwiseAbs().maxCoeff();
     if (!std::isfinite(longest)) return false;
     double fraction = longest > longest_step ? longest_step / longest : 1;
-    const double slope = gradient.dot(y);
-    const Vector start = w.x;
+    const double descent = slope.gradient.dot(y);
+    start = w.x;
     bool accepted = false;
     for (int halving = 0; halving < 40 && !accepted; ++halving, fraction /= 2) {
       w.x = start + fraction * move;
-      n = amounts(w);
+      amounts(w, n);
       const double trial = n.sum() - total.dot(w.x);
       // Near the minimum the decrease drowns in rounding: a step that does not raise the value noticeably is
       // fine.
-      if (trial <= value + 1e-4 * fraction * slope + 1e-14 * std::abs(value)) {
+      if (trial <= value + 1e-4 * fraction * descent + 1e-14 * std::abs(value)) {
         value = trial;
         accepted = true;
       }
@@ -160,12 +236,17 @@ bool newton(Workspace& w, const NullSpace& space, double tolerance, int& iterati
 bool solve_convex(Workspace& w, double tolerance, int& iterations) {
   constexpr double saturated = 1e-7;
   const int most_changes = 20 + 4 * static_cast<int>(w.phases.size());
+  NullSpace space;
+  SpeciesVector n;
   for (int change = 0; change < most_changes; ++change) {
-    const NullSpace space = null_space(w);
+    find_null_space(w, space);
     if (!space.independent) return false;
     meet_conditions(w, space);
     if (!newton(w, space, tolerance, iterations)) return false;
-    set_phase_amounts(w, space, effective_total(w) - w.A * amounts(w));
+    if (space.rows > 0) {
+      amounts(w, n);
+      set_phase_amounts(w, space, effective_total(w) - component_sums(w, n));
+    }
 
     bool changed = false;
     for (Phase& phase : w.phases)
@@ -215,26 +296,29 @@ void cold_start(Workspace& w) {
 
   // Scales every basis species but H^+ to its total, one after the other; each step is a Newton step in the
   // logarithm.
+  SpeciesVector amount;
+  constexpr double largest_ln_start = 600;  // a strong complex of totals that are still free
   const auto scale = [&](double x_proton, int sweeps) {
     w.x(w.proton) = x_proton;
-    Vector amount = amounts(w);
+    amounts(w, amount, largest_ln_start);
     for (int sweep = 0; sweep < sweeps; ++sweep)
       for (Index i = 0; i < n; ++i) {
         if (i == w.proton) continue;
         double sum = 0, weighted = 0;
-        for (Index j = 0; j < w.count(); ++j)
-          if (w.A(i, j) > 0) {
-            sum += w.A(i, j) * amount(j);
-            weighted += w.A(i, j) * w.A(i, j) * amount(j);
+        for (const auto& [j, count] : w.holders(i))
+          if (count > 0) {
+            sum += count * amount(j);
+            weighted += count * count * amount(j);
           }
         const double step = std::log(wanted(i) / sum) * sum / weighted;
         w.x(i) += step;
         // Only the species that hold it move; most hold it once.
         const double once = std::exp(step);
-        for (Index j = 0; j < w.count(); ++j)
-          if (w.A(i, j) != 0) amount(j) *= w.A(i, j) == 1 ? once : std::exp(w.A(i, j) * step);
+        for (const auto& [j, count] : w.holders(i)) amount(j) *= count == 1 ? once : std::exp(count * step);
       }
-    return w.A.row(w.proton).dot(amount) - w.total(w.proton);
+    double protons = -w.total(w.proton);
+    for (const auto& [j, count] : w.holders(w.proton)) protons += count * amount(j);
+    return protons;
   };
   for (Phase& phase : w.phases) {
     if (phase.kind != Phase::Kind::ph) continue;

@@ -1,131 +1,245 @@
 #include "coupled_newton.hpp"
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 #include <limits>
+
+#include "elimination.hpp"
 
 namespace bathwright::speciation {
 namespace {
 
 constexpr double highest_ln_molality = 7;  // above e^7 mol/kg nothing is a solution any more
+constexpr double tiny = std::numeric_limits<double>::min();
+
+/// One linearisation. Species j moves by
+///   d ln m_j = defect_j + A_j' dx + water_j d ln a_w - d ln gamma_k(j),     d ln gamma = H dM,  dM_k = sum
+///   m_j d ln m_j
+/// so that the kinds, not the species, carry the coupling: (1 + diag(M) H) dM = U (dx, d ln a_w, 1) with
+/// U_k = sum_j m_j (A_j, water_j, defect_j). Columns of all tables: components, ln a_w, 1.
+class Linearisation {
+ public:
+  explicit Linearisation(Workspace& w)
+      : w_(w),
+        n_(static_cast<std::size_t>(w.components())),
+        kinds_(w.kinds()),
+        stride_(padded(n_ + 2)),
+        U_(w.kind_table.data()),
+        gamma_(w.kind_table.data() + kinds_ * stride_),
+        X_(w.curvature.data()) {}
+
+  /// From the molalities and the defects of mass action; false when the coefficients cannot follow.
+  bool at(const SpeciesVector& m, const SpeciesVector& defect, const SpeciesVector& in_kind);
+
+  /// Balances of the components, then of water, per kg of water: what is there, d/d(x, ln a_w), and at dx =
+  /// 0.
+  [[nodiscard]] double formed(std::size_t row) const { return formed_[row]; }
+  [[nodiscard]] const double* row(std::size_t r) const { return X_ + r * stride_; }
+
+  /// d ln a_w = water_constant() + water_slope(i) dx_i, by Gibbs-Duhem: -M_w sum m d ln a.
+  [[nodiscard]] double water_constant() const { return water_weight_ * formed_[n_ + 1]; }
+  [[nodiscard]] double water_slope(std::size_t i) const { return water_weight_ * formed_[i]; }
+
+  /// d ln gamma of each kind for a step (dx, d ln a_w, 1).
+  void ln_gamma_step(const double* step, double* change) const {
+    for (std::size_t k = 0; k < kinds_; ++k) {
+      const double* row = gamma_ + k * stride_;
+      double sum = 0;
+      for (std::size_t c = 0; c < n_ + 2; ++c) sum += row[c] * step[c];
+      change[k] = sum;
+    }
+  }
+
+ private:
+  bool solve_kinds(const SpeciesVector& in_kind);
+
+  Workspace& w_;
+  std::size_t n_, kinds_, stride_;
+  double *U_, *gamma_, *X_;
+  std::array<double, most_rows + 2> formed_{};
+  double water_weight_ = 0;
+};
+
+bool Linearisation::at(const SpeciesVector& m, const SpeciesVector& defect, const SpeciesVector& in_kind) {
+  const std::size_t width = n_ + 2;
+  std::fill_n(U_, kinds_ * stride_, 0);
+  std::fill_n(X_, (n_ + 1) * stride_, 0);
+  for (Index j = 0; j < w_.count(); ++j) {
+    double* U = U_ + w_.kind[static_cast<std::size_t>(j)] * stride_;
+    const double mol = m(j), off = mol * defect(j);
+    U[n_ + 1] += off;
+    for (const auto *e = w_.begin(j), *end = w_.end(j); e != end; ++e) {
+      const double weight = mol * e->value;
+      U[e->row] += weight;
+      double* X = X_ + e->row * stride_;
+      X[n_ + 1] += off * e->value;
+      for (const auto* other = w_.begin(j); other != end; ++other) X[other->row] += weight * other->value;
+    }
+  }
+  formed_.fill(0);
+  for (std::size_t k = 0; k < kinds_; ++k)
+    for (std::size_t c = 0; c < width; ++c) formed_[c] += U_[k * stride_ + c];
+  water_weight_ = -activity::water_kg_per_mol / (1 + activity::water_kg_per_mol * formed_[n_]);
+  if (!solve_kinds(in_kind)) return false;
+  for (std::size_t k = 0; k < kinds_; ++k) {
+    const double *U = U_ + k * stride_, *gamma = gamma_ + k * stride_;
+    for (std::size_t r = 0; r <= n_; ++r) {
+      const double weight = U[r];
+      if (weight == 0) continue;
+      double* X = X_ + r * stride_;
+      for (std::size_t c = 0; c < width; ++c) X[c] -= weight * gamma[c];
+    }
+  }
+  return true;
+}
+
+bool Linearisation::solve_kinds(const SpeciesVector& in_kind) {
+  // A trace kind does not move the coefficients of others.
+  const double threshold = 1e-5 * in_kind.sum();
+  std::array<std::uint16_t, activity::max_solutes> abundant;
+  std::size_t count = 0;
+  for (std::size_t k = 0; k < kinds_; ++k)
+    if (in_kind(static_cast<Index>(k)) > threshold) abundant[count++] = static_cast<std::uint16_t>(k);
+  const std::size_t width = n_ + 2, wide = padded(count) + stride_;
+  double* a = w_.elimination.data();
+  const double* H = w_.derivative.data();
+  for (std::size_t r = 0; r < count; ++r) {
+    double* row = a + r * wide;
+    const double mol = in_kind(abundant[r]);
+    for (std::size_t c = 0; c < count; ++c) row[c] = mol * H[abundant[r] * kinds_ + abundant[c]];
+    row[r] += 1;
+    // The right-hand sides follow at once, so that elimination runs along one row.
+    std::copy_n(U_ + abundant[r] * stride_, width, row + count);
+  }
+  if (!eliminate(a, count, count + width, wide)) return false;
+  std::fill_n(gamma_, kinds_ * stride_, 0);
+  std::size_t next = 0;
+  for (std::size_t k = 0; k < kinds_; ++k) {
+    double* gamma = gamma_ + k * stride_;
+    if (next < count && abundant[next] == k) {  // M d ln gamma = U - dM
+      const double *U = U_ + k * stride_, *moved = a + next++ * wide + count;
+      const double scale = 1 / in_kind(static_cast<Index>(k));
+      for (std::size_t c = 0; c < width; ++c) gamma[c] = (U[c] - moved[c]) * scale;
+    } else if (in_kind(static_cast<Index>(k)) > 0) {
+      for (std::size_t r = 0; r < count; ++r) {
+        const double slope = H[k * kinds_ + abundant[r]];
+        const double* moved = a + r * wide + count;
+        for (std::size_t c = 0; c < width; ++c) gamma[c] += slope * moved[c];
+      }
+    }
+  }
+  return true;
+}
 
 }  // namespace
 
 bool solve_coupled(Workspace& w, int& iterations) {
   constexpr int most = 60;
   constexpr double longest_step = 2;  // ln units, of an abundant species
-  constexpr double tiny = std::numeric_limits<double>::min();
   constexpr double met = 2e-13, action_met = 1e-12;
-  const Index n = w.components(), count = w.count();
+  const auto n = static_cast<std::size_t>(w.components());
+  const Index count = w.count();
 
-  std::vector<std::size_t> active;
+  std::array<std::size_t, most_rows> active{};
+  std::size_t held = 0;
   for (std::size_t k = 0; k < w.phases.size(); ++k)
-    if (w.phases[k].active) active.push_back(k);
-  const auto held = static_cast<Index>(active.size());
+    if (w.phases[k].active) {
+      if (held == active.size()) return false;
+      active[held++] = k;
+    }
+  const std::size_t size = n + 1 + held, wide = padded(size + 1);
+  Linearisation line(w);
 
-  Vector ln_m = w.ln_molality().array().min(highest_ln_molality);
-  Matrix G;
-  std::vector<Index> abundant;
+  SpeciesVector ln_m, m, defect, in_kind, ln_gamma_step(static_cast<Index>(w.kinds()));
+  w.ln_molality(ln_m);
+  ln_m = ln_m.array().min(highest_ln_molality);
   double last_worst = std::numeric_limits<double>::infinity();
   for (int step = 0; step < most; ++step) {
     ++iterations;
-    const Vector m = ln_m.array().exp();
-    if (!m.allFinite()) return false;
-    abundant.clear();
-    const double threshold = 1e-5 * m.sum();
-    for (Index j = 0; j < count; ++j)
-      if (m(j) > threshold) abundant.push_back(j);
-    const auto J = static_cast<Index>(abundant.size());
-    w.ln_aw = w.activity_coefficients(m, w.ln_gamma, abundant, G);
-    const Vector defect = w.ln_molality() - ln_m;  // of mass action
-
-    // d ln a_w = -M_w sum m d ln a (Gibbs-Duhem), with d ln a = defect + A'dx + water d ln a_w.
-    const double weight = -activity::water_kg_per_mol / (1 + activity::water_kg_per_mol * m.dot(w.water));
-    const double dw0 = weight * m.dot(defect);
-    const Vector dw = weight * (w.A * m);
-
-    // d ln m of the abundant species = E0 + E dx, from (1 + G m) d ln m = defect + A'dx + water d ln a_w.
-    Matrix coupling(J, J), rhs(J, n + 1);
-    for (Index r = 0; r < J; ++r) {
-      const Index j = abundant[static_cast<std::size_t>(r)];
-      for (Index c = 0; c < J; ++c)
-        coupling(r, c) = G(j, c) * m(abundant[static_cast<std::size_t>(c)]) + (r == c ? 1 : 0);
-      rhs(r, 0) = defect(j) + w.water(j) * dw0;
-      rhs.row(r).tail(n) = (w.A.col(j) + w.water(j) * dw).transpose();
-    }
-    const Matrix moved = coupling.partialPivLu().solve(rhs);
-    Matrix weighted = moved;  // m d ln m, what the other species' coefficients see
-    for (Index r = 0; r < J; ++r) weighted.row(r) *= m(abundant[static_cast<std::size_t>(r)]);
-    Vector E0(count);
-    Matrix E(count, n);
-    for (Index j = 0; j < count; ++j) {
-      const Eigen::RowVectorXd pull = G.row(j) * weighted;
-      E0(j) = defect(j) + w.water(j) * dw0 - pull(0);
-      E.row(j) = (w.A.col(j) + w.water(j) * dw).transpose() - pull.tail(n);
-    }
-    for (Index r = 0; r < J; ++r) {
-      const Index j = abundant[static_cast<std::size_t>(r)];
-      E0(j) = moved(r, 0);
-      E.row(j) = moved.row(r).tail(n);
-    }
+    m = ln_m.array().exp();
+    w.sum_kinds(m, in_kind);
+    const double sum = in_kind.sum();
+    if (!std::isfinite(sum)) return false;
+    w.ln_aw =
+        w.model().evaluate_kinds({in_kind.data(), w.kinds()}, {w.ln_gamma.data(), w.kinds()}, w.derivative);
+    w.ln_molality(defect);
+    defect -= ln_m;  // of mass action
+    if (!line.at(m, defect, in_kind)) return false;
 
     // Balances, water and conditions, linear in (dx, d ln water, phases).
-    const Vector amount = w.water_kg * m;
-    const Vector formed = w.A * amount;
-    const Index size = n + 1 + held;
-    Matrix K = Matrix::Zero(size, size);
-    Vector right(size);
-    K.topLeftCorner(n, n) = w.A * amount.asDiagonal() * E;
-    K.block(0, n, n, 1) = formed;
-    right.head(n) = w.total - formed - w.A * amount.cwiseProduct(E0);
-    const Vector bound = w.water.cwiseProduct(amount);
+    double* K = w.elimination.data();
+    std::fill_n(K, size * wide, 0);
     const double liquid = w.water_kg * water_mol_per_kg;
-    K.block(n, 0, 1, n) = bound.transpose() * E;
-    K(n, n) = liquid + bound.sum();
-    right(n) = w.total_water - liquid - bound.sum() - bound.dot(E0);
-    Vector scale = w.A.cwiseAbs() * amount + w.total.cwiseAbs();
+    std::array<double, most_rows> scale{}, open{};
+    for (Index j = 0; j < count; ++j)
+      for (const auto* e = w.begin(j); e != w.end(j); ++e) scale[e->row] += std::abs(e->value) * m(j);
+    for (std::size_t i = 0; i <= n; ++i) {
+      double* row = K + i * wide;
+      const double* slope = line.row(i);
+      for (std::size_t c = 0; c < n; ++c) row[c] = w.water_kg * (slope[c] + slope[n] * line.water_slope(c));
+      const double there = w.water_kg * line.formed(i) + (i == n ? liquid : 0);
+      row[n] = there;
+      open[i] = (i == n ? w.total_water : w.total(static_cast<Index>(i))) - there;
+      row[size] = open[i] - w.water_kg * (slope[n + 1] + slope[n] * line.water_constant());
+      scale[i] =
+          i == n ? w.total_water : w.water_kg * scale[i] + std::abs(w.total(static_cast<Index>(i))) + tiny;
+    }
     double residual = 0;
-    Vector open = w.total - formed;
-    double open_water = w.total_water - liquid - bound.sum();
-    for (Index k = 0; k < held; ++k) {
-      const Phase& phase = w.phases[active[static_cast<std::size_t>(k)]];
-      K.block(0, n + 1 + k, n, 1) = phase.supply;
-      K(n, n + 1 + k) = phase.supply_water;
-      K.block(n + 1 + k, 0, 1, n) = (phase.condition + phase.water * dw).transpose();
-      const double off = phase.ln_K - phase.condition.dot(w.x) - phase.water * w.ln_aw;
-      right(n + 1 + k) = off - phase.water * dw0;
-      open -= phase.supply * phase.mol;
-      open_water -= phase.supply_water * phase.mol;
+    for (std::size_t k = 0; k < held; ++k) {
+      const Phase& phase = w.phases[active[k]];
+      double* row = K + (n + 1 + k) * wide;
+      double off = phase.ln_K - phase.water * w.ln_aw;
+      for (std::size_t i = 0; i < n; ++i) {
+        const auto at = static_cast<Index>(i);
+        K[i * wide + n + 1 + k] = phase.supply(at);
+        row[i] = phase.condition(at) + phase.water * line.water_slope(i);
+        off -= phase.condition(at) * w.x(at);
+        open[i] -= phase.supply(at) * phase.mol;
+      }
+      K[n * wide + n + 1 + k] = phase.supply_water;
+      open[n] -= phase.supply_water * phase.mol;
+      row[size] = off - phase.water * line.water_constant();
       residual = std::max(residual, std::abs(off));
     }
-    for (Index i = 0; i < n; ++i) residual = std::max(residual, std::abs(open(i)) / (scale(i) + tiny));
-    residual = std::max(residual, std::abs(open_water) / w.total_water);
-    double action = 0;
-    for (Index j = 0; j < count; ++j) action = std::max(action, std::abs(defect(j)));
+    for (std::size_t i = 0; i <= n; ++i) residual = std::max(residual, std::abs(open[i]) / scale[i]);
     // Done at rounding level, or where rounding no longer lets it improve.
-    const double worst = std::max(residual / met, action / action_met);
+    const double worst = std::max(residual / met, defect.cwiseAbs().maxCoeff() / action_met);
     if (step > 0 && (worst < 1 || (worst < 10 && worst > last_worst / 2))) return true;
     last_worst = worst;
 
-    for (Index i = 0; i < n; ++i) {
-      const double s = 1 / (scale(i) + tiny);
-      K.row(i) *= s;
-      right(i) *= s;
+    for (std::size_t i = 0; i <= n; ++i) {
+      const double s = 1 / scale[i];
+      for (std::size_t c = 0; c <= size; ++c) K[i * wide + c] *= s;
     }
-    K.row(n) /= w.total_water;
-    right(n) /= w.total_water;
-    const Vector solution = K.partialPivLu().solve(right);
-    if (!solution.allFinite()) return false;
-    const Vector dln = E0 + E * solution.head(n);
-    double longest = std::abs(solution(n));
-    for (const Index j : abundant) longest = std::max(longest, std::abs(dln(j)));
+    if (!eliminate(K, size, size + 1, wide)) return false;
+    std::array<double, most_rows + 2> move{};  // dx, d ln a_w, 1
+    double d_ln_aw = line.water_constant();
+    for (std::size_t i = 0; i < n; ++i) {
+      move[i] = K[i * wide + size];
+      d_ln_aw += line.water_slope(i) * move[i];
+    }
+    move[n] = d_ln_aw;
+    move[n + 1] = 1;
+    const double d_ln_water = K[n * wide + size];
+    if (!std::isfinite(d_ln_water + d_ln_aw)) return false;
+    line.ln_gamma_step(move.data(), ln_gamma_step.data());
+    double longest = std::abs(d_ln_water);
+    const double abundant = 1e-5 * sum;
+    for (Index j = 0; j < count; ++j) {
+      double d = defect(j) - ln_gamma_step(w.kind[static_cast<std::size_t>(j)]);
+      for (const auto* e = w.begin(j); e != w.end(j); ++e) d += e->value * move[e->row];
+      defect(j) = d;  // from here on the step of ln m
+      if (m(j) > abundant) longest = std::max(longest, std::abs(d));
+    }
+    if (!std::isfinite(longest)) return false;
     const double fraction = longest > longest_step ? longest_step / longest : 1;
-    w.x += fraction * solution.head(n);
-    w.water_kg *= std::exp(fraction * solution(n));
-    ln_m = (ln_m + fraction * dln).array().min(highest_ln_molality);
-    for (Index k = 0; k < held; ++k) {
-      double& mol = w.phases[active[static_cast<std::size_t>(k)]].mol;
-      mol += fraction * (solution(n + 1 + k) - mol);
+    for (std::size_t i = 0; i < n; ++i) w.x(static_cast<Index>(i)) += fraction * move[i];
+    w.water_kg *= std::exp(fraction * d_ln_water);
+    ln_m = (ln_m + fraction * defect).array().min(highest_ln_molality);
+    for (std::size_t k = 0; k < held; ++k) {
+      double& mol = w.phases[active[k]].mol;
+      mol += fraction * (K[(n + 1 + k) * wide + size] - mol);
     }
   }
   return false;

@@ -29,6 +29,9 @@ Result<ChemicalSystem> ChemicalSystem::make(const Equilibria& equilibria,
     }
     if (!system.component(name)) system.components_.push_back(name);
   }
+  if (system.components_.size() > static_cast<std::size_t>(max_components))
+    return Problem{Fault::out_of_range, "", std::to_string(system.components_.size()) + " components",
+                   "at most " + std::to_string(max_components), "Leave out what is not in the tank."};
   const auto dense = [&](const Composition& made_of) -> std::optional<std::vector<double>> {
     std::vector<double> row(system.components_.size(), 0.0);
     for (const auto& [name, count] : made_of) {

@@ -1,11 +1,12 @@
 #include "verify.hpp"
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 
 namespace bathwright::speciation {
 
-Residuals verify(const Solver& solver, const Task& task, const Equilibrium& answer) {
+Residuals verify(const Solver& solver, const Constants& ln_K, const Task& task, const Equilibrium& answer) {
   const ChemicalSystem& system = solver.system();
   const std::size_t components = system.components().size();
   Residuals worst;
@@ -14,21 +15,21 @@ Residuals verify(const Solver& solver, const Task& task, const Equilibrium& answ
   };
 
   // Activity coefficients once more from the molalities.
-  std::vector<double> ln_gamma(answer.molality.size());
+  std::array<double, activity::max_solutes> ln_gamma, ln_a;
+  const std::size_t count = answer.molality.size();
   const double ln_water = solver.model().evaluate(answer.molality, ln_gamma);
-  std::vector<double> ln_a(answer.molality.size());
-  for (std::size_t j = 0; j < ln_a.size(); ++j) ln_a[j] = std::log(answer.molality[j]) + ln_gamma[j];
-  for (std::size_t j = 0; j < ln_a.size(); ++j) {
+  for (std::size_t j = 0; j < count; ++j) ln_a[j] = std::log(answer.molality[j]) + ln_gamma[j];
+  for (std::size_t j = 0; j < count; ++j) {
     const SystemSpecies& species = system.species()[j];
     if (answer.molality[j] <= 0) continue;  // a component that is absent, and all that needs it
-    double expected = solver.ln_K_species()[j] + species.water * ln_water;
+    double expected = ln_K.species[j] + species.water * ln_water;
     for (std::size_t i = 0; i < components; ++i)
       if (species.made_of[i] != 0) expected += species.made_of[i] * ln_a[i];
     raise(worst.mass_action, ln_a[j] - expected);
   }
 
   double charge = 0;
-  for (std::size_t j = 0; j < ln_a.size(); ++j) charge += system.species()[j].charge * answer.molality[j];
+  for (std::size_t j = 0; j < count; ++j) charge += system.species()[j].charge * answer.molality[j];
   double given_charge = 0;  // of the totals: zero when they were neutral compounds
   for (std::size_t i = 0; i < components; ++i)
     given_charge += system.species()[i].charge * task.component_mol[i];
@@ -36,19 +37,19 @@ Residuals verify(const Solver& solver, const Task& task, const Equilibrium& answ
 
   for (std::size_t i = 0; i < components; ++i) {
     double found = 0, throughput = 0;
-    const auto count = [&](double mol) {
+    const auto tally = [&](double mol) {
       found += mol;
       throughput += std::abs(mol);
     };
-    for (std::size_t j = 0; j < ln_a.size(); ++j)
-      count(system.species()[j].made_of[i] * answer.molality[j] * answer.water_kg);
+    for (std::size_t j = 0; j < count; ++j)
+      tally(system.species()[j].made_of[i] * answer.molality[j] * answer.water_kg);
     for (std::size_t k = 0; k < answer.solid_mol.size(); ++k)
-      count(system.solids()[k].made_of[i] * answer.solid_mol[k]);
+      tally(system.solids()[k].made_of[i] * answer.solid_mol[k]);
     for (std::size_t g = 0; g < task.gases.size(); ++g)
-      count(-system.gases()[task.gases[g].gas].made_of[i] * answer.gas_mol[g]);
-    if (task.pH && i == 0) count(-answer.held_ph_mol);
+      tally(-system.gases()[task.gases[g].gas].made_of[i] * answer.gas_mol[g]);
+    if (task.pH && i == 0) tally(-answer.held_ph_mol);
     if (task.pH && i == task.pH->counter_ion)
-      count(answer.held_ph_mol / system.species()[task.pH->counter_ion].charge);
+      tally(answer.held_ph_mol / system.species()[task.pH->counter_ion].charge);
     const double scale = std::max({std::abs(task.component_mol[i]), throughput, 1e15 * absent_mol});
     raise(worst.mass_balance, (found - task.component_mol[i]) / scale);
   }

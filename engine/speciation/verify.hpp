@@ -5,6 +5,7 @@
 
 namespace bathwright::speciation {
 
-[[nodiscard]] Residuals verify(const Solver& solver, const Task& task, const Equilibrium& answer);
+[[nodiscard]] Residuals verify(const Solver& solver, const Constants& ln_K, const Task& task,
+                               const Equilibrium& answer);
 
 }  // namespace bathwright::speciation

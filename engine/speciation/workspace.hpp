@@ -1,5 +1,6 @@
-// One solve in dense form: only the components that are present, the species they can form and the phases
-// that matter, over a basis that can be changed to the most abundant species.
+// One chemical problem in dense form: only the components that are present, the species they can form and the
+// phases that matter, over a basis that can be changed to the most abundant species. All storage is taken
+// when a workspace is made; loading and solving allocate nothing.
 #pragma once
 
 #include <Eigen/Dense>
@@ -8,9 +9,15 @@
 
 namespace bathwright::speciation {
 
-using Matrix = Eigen::MatrixXd;
-using Vector = Eigen::VectorXd;
 using Index = Eigen::Index;
+/// Storage inside the object, so that no product or copy allocates: per component (and one for the water),
+/// square tables of those, per species, components x species.
+inline constexpr int most_rows = max_components + 1;
+using Vector = Eigen::Matrix<double, Eigen::Dynamic, 1, 0, most_rows, 1>;
+using Table = Eigen::Matrix<double, Eigen::Dynamic, Eigen::Dynamic, 0, most_rows, most_rows>;
+using SpeciesVector = Eigen::Matrix<double, Eigen::Dynamic, 1, 0, activity::max_solutes, 1>;
+using Stoichiometry =
+    Eigen::Matrix<double, Eigen::Dynamic, Eigen::Dynamic, 0, max_components, activity::max_solutes>;
 
 /// A condition  condition'x + water ln a_w = ln_K  that holds while `active`, with `supply` added to (formed:
 /// taken from) the totals per mol. A solid and a held gas supply what they condition (supply = condition); a
@@ -27,45 +34,100 @@ struct Phase {
   double mol = 0;  ///< formed (precipitate, excess), or minus the amount supplied (gas, pH)
 };
 
-class Workspace {
+/// What the solver moves.
+struct State {
+  Vector x;                ///< ln activity of the basis
+  SpeciesVector ln_gamma;  ///< per kind of solute
+  double ln_aw = 0;
+  double water_kg = 1;
+};
+
+class Workspace : public State {
  public:
-  Workspace(const Solver& solver, const Task& task);
+  explicit Workspace(const Solver& solver);
+
+  /// The problem of a task, over the components as basis, all precipitates inactive.
+  void load(const Task& task, const Constants& ln_K);
+  /// The same problem with other amounts and constants: keeps state, basis and active phases. False, with
+  /// nothing changed, when the task differs in what is present or held.
+  bool reload(const Task& task, const Constants& ln_K);
 
   [[nodiscard]] Index components() const { return A.rows(); }
   [[nodiscard]] Index count() const { return A.cols(); }
+  [[nodiscard]] std::size_t kinds() const { return model_->kinds(); }
+  [[nodiscard]] const activity::ActivityModel& model() const { return *model_; }
 
-  /// ln activity coefficients and ln a_w of the current molalities; species left out of the workspace count
-  /// as zero.
-  double activity_coefficients(const Vector& molality, Vector& ln_gamma);
-  /// Also derivatives for the listed columns (workspace positions), species by column.
-  double activity_coefficients(const Vector& molality, Vector& ln_gamma, const std::vector<Index>& columns,
-                               Matrix& derivative);
+  /// ln molality of every species at the current state.
+  void ln_molality(SpeciesVector& result) const;
+  /// The same as molalities, none above e^highest; above e^7 nothing is a solution any more.
+  void molality(SpeciesVector& result, double highest = 7) const;
+  /// Sums over each kind of solute.
+  void sum_kinds(const SpeciesVector& molality, SpeciesVector& in_kind) const;
 
   /// Rewrites everything over the most abundant independent species and present solids. x moves with it.
-  void rebase(const Vector& molality, double ln_aw);
+  void rebase(const SpeciesVector& molality);
 
-  Matrix A;                ///< components x species
-  Vector water;            ///< H2O per species
-  Vector ln_K;             ///< per species
-  Vector charge;           ///< per species
+  Stoichiometry A;         ///< components x species
+  SpeciesVector water;     ///< H2O per species
+  SpeciesVector ln_K;      ///< per species
+  SpeciesVector charge;    ///< per species
   Vector total;            ///< per component, mol
   double total_water = 0;  ///< mol
   std::vector<Phase> phases;
   std::vector<std::size_t> species;  ///< workspace position -> system position
+  std::vector<std::uint16_t> kind;   ///< per species
   Index proton = 0;                  ///< row of H^+ in the first basis
 
-  // The state that the methods move.
-  Vector x;         ///< ln activity of the basis
-  Vector ln_gamma;  ///< per species
-  double ln_aw = 0;
-  double water_kg = 1;
+  /// The entries of A that are not zero, column by column; row components() stands for water.
+  struct Entry {
+    std::uint16_t row;
+    double value;
+  };
+  [[nodiscard]] const Entry* begin(Index j) const {
+    return entries_.data() + first_[static_cast<std::size_t>(j)];
+  }
+  [[nodiscard]] const Entry* end(Index j) const {
+    return begin(j) + (first_[static_cast<std::size_t>(j) + 1] - first_[static_cast<std::size_t>(j)]);
+  }
 
-  /// ln molality of every species at the current state.
-  [[nodiscard]] Vector ln_molality() const;
+  /// The species that hold component i, and how many of it each.
+  struct Holder {
+    Index species;
+    double count;
+  };
+  [[nodiscard]] std::span<const Holder> holders(Index i) const {
+    const auto at = static_cast<std::size_t>(i);
+    return {holders_.data() + first_holder_[at], first_holder_[at + 1] - first_holder_[at]};
+  }
+
+  /// Room for the methods, aligned rows: see their use in coupled_newton.cpp and convex_dual.cpp.
+  std::vector<double> kind_table, by_kind, derivative, elimination, curvature;
 
  private:
+  struct BasisMember {
+    bool is_phase;
+    std::size_t index;  ///< in `species` or `phases`
+  };
+  void compile(const Task& task);
+  void fill(const Task& task, const Constants& ln_K);
+  void list_entries();
+  [[nodiscard]] bool same_problem(const Task& task) const;
+
+  const Solver* solver_;
   const activity::ActivityModel* model_;
-  std::vector<double> full_molality_, full_ln_gamma_;
+  std::vector<Index> row_of_;  ///< per component of the system, -1: absent
+  std::vector<bool> present_, was_present_;
+  std::vector<SolidRule> rules_;
+  std::vector<std::size_t> held_gases_;
+  std::optional<std::size_t> counter_ion_;
+  std::vector<std::size_t> first_;  ///< per species: its first entry
+  std::vector<Entry> entries_;
+  std::vector<std::size_t> first_holder_;  ///< per component: its first holder
+  std::vector<Holder> holders_;
+  bool rebased_ = false;
+  std::vector<BasisMember> members_;
+  Table inverse_;  ///< basis over components -> basis over members
+  Vector members_water_;
 };
 
 }  // namespace bathwright::speciation

@@ -1,5 +1,5 @@
 // Solves a chemical system: amounts in, equilibrium out. Prepared once for a system, an activity model and a
-// temperature; then any number of threads may solve with it. Read next: result.hpp of the base for errors,
+// temperature; then any number of threads may solve with it. Read next: session.hpp for many solves in a row,
 // verify.hpp for the check.
 #pragma once
 
@@ -67,6 +67,11 @@ struct Equilibrium {
   [[nodiscard]] double pH() const;  ///< -log10 a(H^+)
 };
 
+/// ln of every constant at the temperature, in the order of the system.
+struct Constants {
+  std::vector<double> species, solids, gases;
+};
+
 class Solver {
  public:
   /// t: 0-100 degC. Fails as make_model does, or for a solid range that excludes the temperature nothing:
@@ -83,9 +88,7 @@ class Solver {
   [[nodiscard]] const ChemicalSystem& system() const { return *system_; }
   [[nodiscard]] const activity::ActivityModel& model() const { return *model_; }
   [[nodiscard]] units::Celsius temperature() const { return t_; }
-  [[nodiscard]] std::span<const double> ln_K_species() const { return ln_K_species_; }
-  [[nodiscard]] std::span<const double> ln_K_solids() const { return ln_K_solids_; }
-  [[nodiscard]] std::span<const double> ln_K_gases() const { return ln_K_gases_; }
+  [[nodiscard]] const Constants& ln_K() const { return ln_K_; }
 
   /// Whether a solid's constant covers this temperature; one that does not never precipitates.
   [[nodiscard]] bool covers(std::size_t solid) const;
@@ -95,7 +98,7 @@ class Solver {
   std::shared_ptr<const ChemicalSystem> system_;
   std::shared_ptr<const activity::ActivityModel> model_;
   units::Celsius t_;
-  std::vector<double> ln_K_species_, ln_K_solids_, ln_K_gases_;
+  Constants ln_K_;
 };
 
 /// A total below this counts as absent: far less than one ion, and too near the end of what a double can

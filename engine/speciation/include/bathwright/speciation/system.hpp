@@ -23,11 +23,14 @@ struct SystemSolid : SystemSpecies {
   std::string note;
 };
 
+/// The most components of one system, H^+ among them.
+inline constexpr int max_components = 48;
+
 class ChemicalSystem {
  public:
   /// Everything that can form from the components. H^+ is always component 0; the first species are the
   /// components themselves, in the same order. Fails on a component that is not a basis species (with the
-  /// nearest one) and on more species than an activity model takes.
+  /// nearest one), on more than max_components and on more species than an activity model takes.
   static Result<ChemicalSystem> make(const Equilibria& equilibria,
                                      const std::vector<std::string>& components);
 

@@ -1,0 +1,33 @@
+// Solves again and again with one solver: a path of additions, the samples of an uncertainty, a fit. Not for:
+// one solve (Solver::solve), or more than one thread (make a session for each).
+#pragma once
+
+#include <bathwright/speciation/solver.hpp>
+
+namespace bathwright::speciation {
+
+class Session {
+ public:
+  /// The solver must outlive the session. Takes all the storage it will ever need: solving allocates nothing
+  /// unless it fails.
+  explicit Session(const Solver& solver);
+  ~Session();
+  Session(Session&&) noexcept;
+  Session& operator=(Session&&) noexcept;
+
+  /// As Solver::solve, into an answer whose storage is used again.
+  Outcome solve(const Task& task, Equilibrium& answer);
+
+  /// Starts from the last answer, which should be near; where that does not lead to an answer, or another
+  /// set of components or phases is present, as solve(). The result is the same to rounding.
+  Outcome solve_near_last(const Task& task, Equilibrium& answer);
+
+  /// The constants this session solves with: those of the solver until changed.
+  Constants& ln_K();
+
+ private:
+  struct Storage;
+  std::unique_ptr<Storage> storage_;
+};
+
+}  // namespace bathwright::speciation

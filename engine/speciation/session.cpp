@@ -1,0 +1,265 @@
+#include <algorithm>
+#include <bathwright/speciation/session.hpp>
+#include <cmath>
+#include <limits>
+
+#include "active_set.hpp"
+#include "answer.hpp"
+#include "convex_dual.hpp"
+#include "coupled_newton.hpp"
+#include "refusal.hpp"
+#include "task_check.hpp"
+
+namespace bathwright::speciation {
+namespace {
+
+constexpr double saturated = 1e-9;        // ln units
+constexpr double scarce_fraction = 1e-6;  // a free ion below this share of its total needs a better basis
+
+/// Moves the coefficients a share of the way to those of the present composition; the largest change, ln
+/// units, of a kind that is not a trace.
+double move_coefficients(Workspace& w, double share) {
+  SpeciesVector m, in_kind, fresh(static_cast<Index>(w.kinds()));
+  w.molality(m);
+  w.sum_kinds(m, in_kind);
+  const double ln_aw = w.model().evaluate_kinds({in_kind.data(), w.kinds()}, {fresh.data(), w.kinds()});
+  w.ln_aw += share * (ln_aw - w.ln_aw);
+  const double threshold = 1e-8 * in_kind.sum();
+  double largest = 0;
+  for (Index k = 0; k < fresh.size(); ++k)
+    if (in_kind(k) > threshold) largest = std::max(largest, std::abs(fresh(k) - w.ln_gamma(k)));
+  w.ln_gamma += share * (fresh - w.ln_gamma);
+  return largest;
+}
+
+/// Coefficients of the components as if nothing formed from them.
+void guess_coefficients(Workspace& w) {
+  SpeciesVector m = SpeciesVector::Zero(w.count()), in_kind;
+  for (Index i = 0; i < w.components(); ++i) m(i) = std::max(w.total(i), 0.0) / w.water_kg;
+  w.sum_kinds(m, in_kind);
+  w.ln_aw = w.model().evaluate_kinds({in_kind.data(), w.kinds()}, {w.ln_gamma.data(), w.kinds()});
+}
+
+/// Liquid water from the water balance at the present composition.
+void balance_water(Workspace& w) {
+  SpeciesVector m;
+  w.molality(m);
+  double bound = w.water.dot(m) * w.water_kg;
+  for (const Phase& phase : w.phases)
+    if (phase.active) bound += phase.supply_water * phase.mol;
+  const double liquid = (w.total_water - bound) / water_mol_per_kg;
+  w.water_kg = std::clamp(liquid, 0.2 * w.water_kg, 5 * w.water_kg);
+}
+
+/// Coupled Newton, one change of the active set at a time until it settles.
+bool finish(Workspace& w, int& iterations) {
+  const std::size_t most = 10 + 4 * w.phases.size();
+  for (std::size_t change = 0; change < most; ++change) {
+    if (!solve_coupled(w, iterations)) return false;
+    // Largest violation first; from half-way on the first one found, so that no cycle can last.
+    const bool first = change > most / 2;
+    Phase* leaving = nullptr;
+    std::size_t entering = w.phases.size();
+    double least = 0, largest = saturated;
+    for (std::size_t k = 0; k < w.phases.size(); ++k) {
+      Phase& phase = w.phases[k];
+      if (phase.kind != Phase::Kind::precipitate) continue;
+      if (phase.active) {
+        if (phase.mol < least && !(first && leaving)) leaving = &phase, least = phase.mol;
+      } else if (const double above = ln_saturation(w, phase);
+                 above > largest && !(first && entering < w.phases.size())) {
+        entering = k, largest = above;
+      }
+    }
+    if (leaving) {
+      leaving->active = false;
+      leaving->mol = 0;
+    } else if (entering == w.phases.size()) {
+      return true;
+    } else if (!let_in(w, entering, WaterActivity::free)) {
+      return false;
+    }
+  }
+  return false;
+}
+
+/// Fixed point on the activity coefficients with a step that adapts; slow and sturdy, for where Newton does
+/// not arrive.
+bool approach(Workspace& w, int& iterations) {
+  constexpr int most = 200;
+  double share = 0.5, last = std::numeric_limits<double>::infinity();
+  for (int step = 0; step < most; ++step) {
+    if (!solve_convex(w, 1e-8, iterations)) return false;
+    balance_water(w);
+    const double change = move_coefficients(w, share);
+    if (change < 1e-4) return true;
+    share = change < last ? std::min(1.0, 1.15 * share) : std::max(0.02, 0.5 * share);
+    last = change;
+  }
+  return false;
+}
+
+/// A state with its active phases, to come back to.
+class Mark {
+ public:
+  explicit Mark(const Workspace& w) : state_(w) {
+    active_.reserve(w.phases.capacity());
+    mol_.reserve(w.phases.capacity());
+  }
+  void set(const Workspace& w) {
+    state_ = w;
+    active_.clear();
+    mol_.clear();
+    for (const Phase& phase : w.phases) {
+      active_.push_back(phase.active);
+      mol_.push_back(phase.mol);
+    }
+  }
+  void restore(Workspace& w) const {
+    static_cast<State&>(w) = state_;
+    for (std::size_t k = 0; k < w.phases.size(); ++k) {
+      w.phases[k].active = active_[k];
+      w.phases[k].mol = mol_[k];
+    }
+  }
+
+ private:
+  State state_;
+  std::vector<bool> active_;
+  std::vector<double> mol_;
+};
+
+/// Starts from a dilute solution, where everything is easy, and takes the water away again in steps that
+/// adapt.
+bool concentrate(Workspace& w, Mark& start, int& iterations) {
+  constexpr double least_step = 0.01;  // in ln of the water
+  const double water = w.total_water;
+  double ln_dilution = std::log(100.0), step = 0.7;
+  w.total_water = water * std::exp(ln_dilution);
+  w.water_kg *= std::exp(ln_dilution);
+  w.ln_gamma.setZero();
+  w.ln_aw = 0;
+  cold_start(w);
+  if (!solve_convex(w, 1e-3, iterations) || !finish(w, iterations)) return false;
+  while (ln_dilution > 0) {
+    start.set(w);
+    const double next = std::max(0.0, ln_dilution - step);
+    w.total_water = water * std::exp(next);
+    w.water_kg *= std::exp(next - ln_dilution);
+    for (Index i = 0; i < w.components(); ++i)
+      if (i != w.proton) w.x(i) += ln_dilution - next;
+    if (finish(w, iterations)) {
+      ln_dilution = next;
+      step *= 1.5;
+    } else {
+      start.restore(w);
+      w.total_water = water * std::exp(ln_dilution);
+      step /= 3;
+      if (step < least_step) return false;  // w stands at the last solution found
+    }
+  }
+  return true;
+}
+
+bool scarce(const Workspace& w, const SpeciesVector& m) {
+  Vector throughput = w.total.cwiseAbs();
+  for (Index i = 0; i < w.components(); ++i)
+    for (const auto& [j, count] : w.holders(i)) throughput(i) += std::abs(count) * m(j) * w.water_kg;
+  for (Index i = 0; i < w.components(); ++i) {
+    const double own = std::exp(std::min(w.x(i), 50.0)) * w.water_kg;
+    if (own < scarce_fraction * throughput(i)) return true;
+  }
+  return false;
+}
+
+/// Coupled Newton over a basis in which no component is scarce.
+bool settle(Workspace& w, int& iterations) {
+  SpeciesVector m;
+  w.molality(m);
+  if (scarce(w, m)) w.rebase(m);
+  if (!finish(w, iterations)) return false;
+  // What was abundant on the way here may not be in the end.
+  w.molality(m);
+  if (!scarce(w, m)) return true;
+  w.rebase(m);
+  return solve_coupled(w, iterations);
+}
+
+bool solve_cold(Workspace& w, Mark& mark, const Task& task, const Constants& ln_K, int& iterations) {
+  const auto begin = [&] {
+    w.load(task, ln_K);
+    guess_coefficients(w);
+    cold_start(w);
+  };
+  const auto direct = [&] {
+    begin();
+    if (!solve_convex(w, 1e-2, iterations)) return false;
+    move_coefficients(w, 1);
+    balance_water(w);
+    cold_start(w);
+    return solve_convex(w, 1e-3, iterations) && settle(w, iterations);
+  };
+  const auto by_approach = [&] {
+    begin();
+    return approach(w, iterations) && settle(w, iterations);
+  };
+  const auto by_concentration = [&] {
+    begin();
+    return concentrate(w, mark, iterations) && settle(w, iterations);
+  };
+  return direct() || by_approach() || by_concentration();
+}
+
+}  // namespace
+
+struct Session::Storage {
+  const Solver* solver;
+  Constants ln_K;
+  Workspace workspace;
+  Mark mark;
+  bool solved = false;  ///< the workspace stands at an answer
+
+  explicit Storage(const Solver& s) : solver(&s), ln_K(s.ln_K()), workspace(s), mark(workspace) {}
+
+  Outcome finish_with(const Task& task, int iterations, Equilibrium& answer) {
+    read_answer(workspace, *solver, ln_K, task, answer);
+    answer.iterations = iterations;
+    const Residuals& r = answer.residuals;
+    solved =
+        !(r.mass_balance > 1e-12 || r.mass_action > 1e-10 || r.saturation > 1e-8 || r.negative_solid > 0);
+    if (!solved) return failed_check(r);
+    return Done{};
+  }
+
+  Outcome solve(const Task& task, Equilibrium& answer) {
+    int iterations = 0;
+    solved = false;
+    if (!solve_cold(workspace, mark, task, ln_K, iterations))
+      return refusal(workspace, solver->system(), task);
+    return finish_with(task, iterations, answer);
+  }
+};
+
+Session::Session(const Solver& solver) : storage_(std::make_unique<Storage>(solver)) {}
+Session::~Session() = default;
+Session::Session(Session&&) noexcept = default;
+Session& Session::operator=(Session&&) noexcept = default;
+
+Constants& Session::ln_K() { return storage_->ln_K; }
+
+Outcome Session::solve(const Task& task, Equilibrium& answer) {
+  if (Outcome ok = check(storage_->solver->system(), task); !ok) return ok;
+  return storage_->solve(task, answer);
+}
+
+Outcome Session::solve_near_last(const Task& task, Equilibrium& answer) {
+  Storage& s = *storage_;
+  if (Outcome ok = check(s.solver->system(), task); !ok) return ok;
+  if (s.solved && s.workspace.reload(task, s.ln_K)) {
+    int iterations = 0;
+    if (settle(s.workspace, iterations) && s.finish_with(task, iterations, answer)) return Done{};
+  }
+  return s.solve(task, answer);
+}
+
+}  // namespace bathwright::speciation
