@@ -4,23 +4,17 @@
 #include <bathwright/speciation/components.hpp>
 #include <bathwright/speciation/solver.hpp>
 #include <catch2/catch.hpp>
-#include <cmath>
-#include <map>
 #include <memory>
 #include <numeric>
 #include <string>
 #include <vector>
 
+#include "../../support/bath_systems.hpp"
+
 namespace bathwright::speciation {
 
 inline constexpr units::Celsius room{25};
 using Names = std::vector<std::string>;
-/// mol of each named component; H^+ is left out where the totals are those of neutral compounds.
-using Amounts = std::map<std::string, double>;
-
-inline const Equilibria& equilibria_for(activity::ModelKind kind) {
-  return Equilibria::built_in(activity::convention(kind));
-}
 
 inline std::shared_ptr<const ChemicalSystem> system_of(const Equilibria& equilibria,
                                                        const Names& components) {
@@ -37,14 +31,6 @@ inline Solver solver_of(const Names& components, units::Celsius t = room,
   return *std::move(solver);
 }
 
-/// The H^+ that makes the totals those of neutral compounds: minus the charge of the other components.
-inline double neutral_protons(const ChemicalSystem& system, const std::vector<double>& component_mol) {
-  double charge = 0;
-  for (std::size_t i = 1; i < component_mol.size(); ++i)
-    charge += system.species()[i].charge * component_mol[i];
-  return -charge;
-}
-
 /// 1 kg of water with these amounts, neutral by H^+ or OH^- unless H^+ is among them.
 inline Task task_of(const ChemicalSystem& system, const Amounts& amounts) {
   Task task;
@@ -56,13 +42,6 @@ inline Task task_of(const ChemicalSystem& system, const Amounts& amounts) {
   }
   if (!amounts.contains("H^+")) task.component_mol[0] = neutral_protons(system, task.component_mol);
   return task;
-}
-
-/// Lets every solid form that its constant and the trade's experience allow.
-inline void let_precipitate(Task& task, const ChemicalSystem& system) {
-  task.solids.clear();
-  for (const SystemSolid& solid : system.solids())
-    task.solids.push_back(solid.slow ? SolidRule::report_only : SolidRule::may_precipitate);
 }
 
 inline void set_rule(Task& task, const ChemicalSystem& system, std::string_view solid, SolidRule rule) {

@@ -27,20 +27,12 @@ SweepReport sweep_watts_bath(unsigned seed, int count) {
   std::vector<Solver> solvers;
   for (const double t : {5.0, 25.0, 55.0}) solvers.push_back(solver_of(components, {t}));
 
-  constexpr double lowest = 1e-12, highest = 8, share_absent = 0.125;
   std::mt19937 random(seed);
-  std::uniform_real_distribution<double> ln_mol(std::log(lowest), std::log(highest)), chance(0, 1);
   SweepReport report;
   std::vector<double> microseconds;
   for (int number = 0; number < count; ++number) {
     const Solver& solver = solvers[static_cast<std::size_t>(number % 3)];
-    Task task;
-    task.component_mol.assign(solver.system().components().size(), 0);
-    for (std::size_t i = 1; i < task.component_mol.size(); ++i) {
-      const double mol = std::exp(ln_mol(random));
-      task.component_mol[i] = chance(random) < share_absent ? 0 : mol;
-    }
-    task.component_mol[0] = neutral_protons(solver.system(), task.component_mol);
+    Task task = wild_totals(solver.system(), random);
     if (number % 2 == 1) let_precipitate(task, solver.system());
 
     const auto start = std::chrono::steady_clock::now();
