@@ -231,6 +231,31 @@ bool newton(Workspace& w, const NullSpace& space, double tolerance, int& iterati
   return false;
 }
 
+enum class Scale : std::uint8_t { up_and_down, down_only };
+
+/// Scales every basis species but H^+ to its total (where that is above 0), one after the other; each step is
+/// a Newton step in the logarithm.
+void scale_to(Workspace& w, const Vector& wanted, Scale direction, int sweeps, SpeciesVector& amount) {
+  constexpr double largest_ln_start = 600;  // a strong complex of totals that are still free
+  amounts(w, amount, largest_ln_start);
+  for (int sweep = 0; sweep < sweeps; ++sweep)
+    for (Index i = 0; i < w.components(); ++i) {
+      if (i == w.proton || !(wanted(i) > 0)) continue;
+      double sum = 0, weighted = 0;
+      for (const auto& [j, count] : w.holders(i))
+        if (count > 0) {
+          sum += count * amount(j);
+          weighted += count * count * amount(j);
+        }
+      if (direction == Scale::down_only && sum <= wanted(i)) continue;
+      const double step = std::log(wanted(i) / sum) * sum / weighted;
+      w.x(i) += step;
+      // Only the species that hold it move; most hold it once.
+      const double once = std::exp(step);
+      for (const auto& [j, count] : w.holders(i)) amount(j) *= count == 1 ? once : std::exp(count * step);
+    }
+}
+
 }  // namespace
 
 bool solve_convex(Workspace& w, double tolerance, int& iterations) {
@@ -294,28 +319,10 @@ void cold_start(Workspace& w) {
   }
   w.x = (wanted / w.water_kg).array().log().matrix();
 
-  // Scales every basis species but H^+ to its total, one after the other; each step is a Newton step in the
-  // logarithm.
-  SpeciesVector amount;
-  constexpr double largest_ln_start = 600;  // a strong complex of totals that are still free
   const auto scale = [&](double x_proton, int sweeps) {
     w.x(w.proton) = x_proton;
-    amounts(w, amount, largest_ln_start);
-    for (int sweep = 0; sweep < sweeps; ++sweep)
-      for (Index i = 0; i < n; ++i) {
-        if (i == w.proton) continue;
-        double sum = 0, weighted = 0;
-        for (const auto& [j, count] : w.holders(i))
-          if (count > 0) {
-            sum += count * amount(j);
-            weighted += count * count * amount(j);
-          }
-        const double step = std::log(wanted(i) / sum) * sum / weighted;
-        w.x(i) += step;
-        // Only the species that hold it move; most hold it once.
-        const double once = std::exp(step);
-        for (const auto& [j, count] : w.holders(i)) amount(j) *= count == 1 ? once : std::exp(count * step);
-      }
+    SpeciesVector amount;
+    scale_to(w, wanted, Scale::up_and_down, sweeps, amount);
     double protons = -w.total(w.proton);
     for (const auto& [j, count] : w.holders(w.proton)) protons += count * amount(j);
     return protons;
@@ -333,13 +340,16 @@ void cold_start(Workspace& w) {
     return;
   }
   double low = -20 * std::numbers::ln10, high = 3 * std::numbers::ln10;  // pH 20 to -3
-  const Vector start = w.x;
-  for (int halving = 0; halving < 8; ++halving) {  // to a tenth of a pH unit
+  for (int halving = 0; halving < 7; ++halving) {  // to a fifth of a pH unit
     const double middle = (low + high) / 2;
-    w.x = start;
-    (scale(middle, 4) > 0 ? high : low) = middle;
+    (scale(middle, 2) > 0 ? high : low) = middle;
   }
   scale(low, 4);
+}
+
+void pull_back(Workspace& w) {
+  SpeciesVector amount;
+  scale_to(w, effective_total(w), Scale::down_only, 2, amount);
 }
 
 }  // namespace bathwright::speciation

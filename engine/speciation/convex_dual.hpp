@@ -19,4 +19,7 @@ bool solve_convex(Workspace& w, double tolerance, int& iterations);
 /// Finds the pH by bisection of the proton balance, the rest by scaling each basis species to its total.
 void cold_start(Workspace& w);
 
+/// After the coefficients have moved: scales down what stands above its total, at the present pH.
+void pull_back(Workspace& w);
+
 }  // namespace bathwright::speciation

@@ -29,12 +29,16 @@ class Linearisation {
         gamma_(w.kind_table.data() + kinds_ * stride_),
         X_(w.curvature.data()) {}
 
-  /// From the molalities and the defects of mass action; false when the coefficients cannot follow.
-  bool at(const SpeciesVector& m, const SpeciesVector& defect, const SpeciesVector& in_kind);
+  /// What is there of everything, from the molalities and the defects of mass action.
+  void add_up(const SpeciesVector& m, const SpeciesVector& defect);
+  /// Slopes of the sums; false when the coefficients cannot follow.
+  bool linearise(const SpeciesVector& m, const SpeciesVector& defect, const SpeciesVector& in_kind);
 
   /// Balances of the components, then of water, per kg of water: what is there, d/d(x, ln a_w), and at dx =
   /// 0.
   [[nodiscard]] double formed(std::size_t row) const { return formed_[row]; }
+  /// The sum of their sizes.
+  [[nodiscard]] double turnover(std::size_t row) const { return scale_[row]; }
   [[nodiscard]] const double* row(std::size_t r) const { return X_ + r * stride_; }
 
   /// d ln a_w = water_constant() + water_slope(i) dx_i, by Gibbs-Duhem: -M_w sum m d ln a.
@@ -57,30 +61,42 @@ class Linearisation {
   Workspace& w_;
   std::size_t n_, kinds_, stride_;
   double *U_, *gamma_, *X_;
-  std::array<double, most_rows + 2> formed_{};
+  std::array<double, most_rows + 2> formed_{}, scale_{};
   double water_weight_ = 0;
 };
 
-bool Linearisation::at(const SpeciesVector& m, const SpeciesVector& defect, const SpeciesVector& in_kind) {
-  const std::size_t width = n_ + 2;
+void Linearisation::add_up(const SpeciesVector& m, const SpeciesVector& defect) {
   std::fill_n(U_, kinds_ * stride_, 0);
-  std::fill_n(X_, (n_ + 1) * stride_, 0);
+  scale_.fill(0);
   for (Index j = 0; j < w_.count(); ++j) {
     double* U = U_ + w_.kind[static_cast<std::size_t>(j)] * stride_;
+    const double mol = m(j);
+    U[n_ + 1] += mol * defect(j);
+    for (const auto *e = w_.begin(j), *end = w_.end(j); e != end; ++e) {
+      const double part = mol * e->value;
+      U[e->row] += part;
+      scale_[e->row] += std::abs(part);
+    }
+  }
+  formed_.fill(0);
+  for (std::size_t k = 0; k < kinds_; ++k)
+    for (std::size_t c = 0; c < n_ + 2; ++c) formed_[c] += U_[k * stride_ + c];
+  water_weight_ = -activity::water_kg_per_mol / (1 + activity::water_kg_per_mol * formed_[n_]);
+}
+
+bool Linearisation::linearise(const SpeciesVector& m, const SpeciesVector& defect,
+                              const SpeciesVector& in_kind) {
+  const std::size_t width = n_ + 2;
+  std::fill_n(X_, (n_ + 1) * stride_, 0);
+  for (Index j = 0; j < w_.count(); ++j) {
     const double mol = m(j), off = mol * defect(j);
-    U[n_ + 1] += off;
     for (const auto *e = w_.begin(j), *end = w_.end(j); e != end; ++e) {
       const double weight = mol * e->value;
-      U[e->row] += weight;
       double* X = X_ + e->row * stride_;
       X[n_ + 1] += off * e->value;
       for (const auto* other = w_.begin(j); other != end; ++other) X[other->row] += weight * other->value;
     }
   }
-  formed_.fill(0);
-  for (std::size_t k = 0; k < kinds_; ++k)
-    for (std::size_t c = 0; c < width; ++c) formed_[c] += U_[k * stride_ + c];
-  water_weight_ = -activity::water_kg_per_mol / (1 + activity::water_kg_per_mol * formed_[n_]);
   if (!solve_kinds(in_kind)) return false;
   for (std::size_t k = 0; k < kinds_; ++k) {
     const double *U = U_ + k * stride_, *gamma = gamma_ + k * stride_;
@@ -165,42 +181,30 @@ bool solve_coupled(Workspace& w, int& iterations) {
         w.model().evaluate_kinds({in_kind.data(), w.kinds()}, {w.ln_gamma.data(), w.kinds()}, w.derivative);
     w.ln_molality(defect);
     defect -= ln_m;  // of mass action
-    if (!line.at(m, defect, in_kind)) return false;
+    line.add_up(m, defect);
 
-    // Balances, water and conditions, linear in (dx, d ln water, phases).
-    double* K = w.elimination.data();
-    std::fill_n(K, size * wide, 0);
     const double liquid = w.water_kg * water_mol_per_kg;
-    std::array<double, most_rows> scale{}, open{};
-    for (Index j = 0; j < count; ++j)
-      for (const auto* e = w.begin(j); e != w.end(j); ++e) scale[e->row] += std::abs(e->value) * m(j);
-    for (std::size_t i = 0; i <= n; ++i) {
-      double* row = K + i * wide;
-      const double* slope = line.row(i);
-      for (std::size_t c = 0; c < n; ++c) row[c] = w.water_kg * (slope[c] + slope[n] * line.water_slope(c));
-      const double there = w.water_kg * line.formed(i) + (i == n ? liquid : 0);
-      row[n] = there;
-      open[i] = (i == n ? w.total_water : w.total(static_cast<Index>(i))) - there;
-      row[size] = open[i] - w.water_kg * (slope[n + 1] + slope[n] * line.water_constant());
-      scale[i] =
-          i == n ? w.total_water : w.water_kg * scale[i] + std::abs(w.total(static_cast<Index>(i))) + tiny;
+    std::array<double, most_rows> scale, open, off{};
+    for (std::size_t i = 0; i < n; ++i) {
+      const double total = w.total(static_cast<Index>(i));
+      scale[i] = w.water_kg * line.turnover(i) + std::abs(total) + tiny;
+      open[i] = total - w.water_kg * line.formed(i);
     }
+    scale[n] = w.total_water;
+    open[n] = w.total_water - w.water_kg * line.formed(n) - liquid;
     double residual = 0;
+    // Of the balances as they stand; `right` is what the phases, unknown as amounts, have to close.
+    std::array<double, most_rows> right = open;
     for (std::size_t k = 0; k < held; ++k) {
       const Phase& phase = w.phases[active[k]];
-      double* row = K + (n + 1 + k) * wide;
-      double off = phase.ln_K - phase.water * w.ln_aw;
+      off[k] = phase.ln_K - phase.water * w.ln_aw;
       for (std::size_t i = 0; i < n; ++i) {
         const auto at = static_cast<Index>(i);
-        K[i * wide + n + 1 + k] = phase.supply(at);
-        row[i] = phase.condition(at) + phase.water * line.water_slope(i);
-        off -= phase.condition(at) * w.x(at);
+        off[k] -= phase.condition(at) * w.x(at);
         open[i] -= phase.supply(at) * phase.mol;
       }
-      K[n * wide + n + 1 + k] = phase.supply_water;
       open[n] -= phase.supply_water * phase.mol;
-      row[size] = off - phase.water * line.water_constant();
-      residual = std::max(residual, std::abs(off));
+      residual = std::max(residual, std::abs(off[k]));
     }
     for (std::size_t i = 0; i <= n; ++i) residual = std::max(residual, std::abs(open[i]) / scale[i]);
     // Done at rounding level, or where rounding no longer lets it improve.
@@ -208,6 +212,28 @@ bool solve_coupled(Workspace& w, int& iterations) {
     if (step > 0 && (worst < 1 || (worst < 10 && worst > last_worst / 2))) return true;
     last_worst = worst;
 
+    // Balances, water and conditions, linear in (dx, d ln water, phases).
+    if (!line.linearise(m, defect, in_kind)) return false;
+    double* K = w.elimination.data();
+    std::fill_n(K, size * wide, 0);
+    for (std::size_t i = 0; i <= n; ++i) {
+      double* row = K + i * wide;
+      const double* slope = line.row(i);
+      for (std::size_t c = 0; c < n; ++c) row[c] = w.water_kg * (slope[c] + slope[n] * line.water_slope(c));
+      row[n] = w.water_kg * line.formed(i) + (i == n ? liquid : 0);
+      row[size] = right[i] - w.water_kg * (slope[n + 1] + slope[n] * line.water_constant());
+    }
+    for (std::size_t k = 0; k < held; ++k) {
+      const Phase& phase = w.phases[active[k]];
+      double* row = K + (n + 1 + k) * wide;
+      for (std::size_t i = 0; i < n; ++i) {
+        const auto at = static_cast<Index>(i);
+        K[i * wide + n + 1 + k] = phase.supply(at);
+        row[i] = phase.condition(at) + phase.water * line.water_slope(i);
+      }
+      K[n * wide + n + 1 + k] = phase.supply_water;
+      row[size] = off[k] - phase.water * line.water_constant();
+    }
     for (std::size_t i = 0; i <= n; ++i) {
       const double s = 1 / scale[i];
       for (std::size_t c = 0; c <= size; ++c) K[i * wide + c] *= s;

@@ -196,7 +196,7 @@ bool solve_cold(Workspace& w, Mark& mark, const Task& task, const Constants& ln_
     if (!solve_convex(w, 1e-2, iterations)) return false;
     move_coefficients(w, 1);
     balance_water(w);
-    cold_start(w);
+    pull_back(w);
     return solve_convex(w, 1e-3, iterations) && settle(w, iterations);
   };
   const auto by_approach = [&] {

@@ -12,6 +12,7 @@ namespace {
 
 /// Stoichiometric inverses are small fractions; rounding them keeps the totals of the new basis exact.
 double to_simple_fraction(double value) {
+  if (value == static_cast<double>(static_cast<int>(value))) return value;
   constexpr double denominator = 5040;
   const double rounded = std::round(value * denominator) / denominator;
   return std::abs(value - rounded) < 1e-10 ? rounded : value;
