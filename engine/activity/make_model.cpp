@@ -5,8 +5,25 @@
 
 namespace bathwright::activity {
 
+ParameterSets parameter_sets_for(const std::map<std::string, double>& total_molality) {
+  const auto total = [&](const char* name) {
+    const auto found = total_molality.find(name);
+    return found == total_molality.end() ? 0.0 : found->second;
+  };
+  ParameterSets sets;
+  sets.acid = acid_set_for(total("Cl^-"), total("SO4^2-"));
+  if (!(total("Zn^2+") > 0)) return sets;
+  // Twice the zinc chloride to which the published fit goes; the alkali from which the zincate set holds.
+  constexpr double strong_chloride = 2.4, strong_alkali = 0.3;  // mol/kg
+  if (-total("H^+") > strong_alkali)
+    sets.zinc = ZincSet::alkaline;
+  else if (total("Cl^-") > strong_chloride)
+    sets.zinc = ZincSet::chloride;
+  return sets;
+}
+
 Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::span<const Solute> solutes,
-                                                        units::Celsius t, AcidSet acid_set) {
+                                                        units::Celsius t, ParameterSets sets) {
   if (solutes.size() > max_solutes)
     return Problem{Fault::out_of_range, "", std::to_string(solutes.size()) + " dissolved species",
                    "at most " + std::to_string(max_solutes), ""};
@@ -21,7 +38,7 @@ Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::spa
       model = std::make_unique<DebyeHueckelModel>(solutes, t);
       break;
     case ModelKind::pitzer:
-      model = std::make_unique<PitzerModel>(solutes, t, pitzer_parameters(solutes, t, acid_set));
+      model = std::make_unique<PitzerModel>(solutes, t, pitzer_parameters(solutes, t, sets));
       break;
   }
   return model;

@@ -8,6 +8,7 @@
 #include <cstdlib>
 #include <map>
 #include <optional>
+#include <set>
 #include <tuple>
 
 namespace bathwright::activity {
@@ -22,26 +23,26 @@ struct BinaryRow {
   double t_C;
   std::array<double, 4> value, slope;  ///< beta0, beta1, beta2, C_phi
   double alpha1, alpha2, max_molality;
-  std::string quality, source;
+  std::string range_of, quality, source;
 };
 struct MixingRow {
   double t_C, value, slope;
   std::string quality, source;
 };
-using BinaryKey = std::tuple<std::string, std::string, std::string>;  ///< set, cation, anion
-using MixingKey =
-    std::tuple<std::string, std::string, std::array<std::string, 3>>;  ///< set, kind, sorted names
+using BinaryKey = std::tuple<std::string, std::string, std::string>;     ///< set, cation, anion
+using Interaction = std::pair<std::string, std::array<std::string, 3>>;  ///< kind, sorted names
+using MixingKey = std::pair<std::string, Interaction>;                   ///< set, interaction
 
 struct Tables {
   std::map<BinaryKey, std::vector<BinaryRow>> binary;  ///< rows by rising temperature
   std::map<MixingKey, std::vector<MixingRow>> mixing;
+  std::set<Interaction> triplets;  ///< every psi, zeta and mu that some set holds
 };
 
-MixingKey mixing_key(std::string set, std::string kind, std::string_view i, std::string_view j,
-                     std::string_view k) {
+Interaction interaction(std::string_view kind, std::string_view i, std::string_view j, std::string_view k) {
   std::array<std::string, 3> names{std::string(i), std::string(j), std::string(k)};
   std::sort(names.begin(), names.end());
-  return {std::move(set), std::move(kind), std::move(names)};
+  return {std::string(kind), std::move(names)};
 }
 
 const Tables& tables() {
@@ -60,6 +61,7 @@ const Tables& tables() {
            row.number("alpha1"),
            row.number("alpha2"),
            row.number("max_molality"),
+           std::string(row["range_of"]),
            std::string(row["quality"]),
            std::string(row["source"])});
     }
@@ -67,9 +69,11 @@ const Tables& tables() {
         data::built_in_table("activity/pitzer_mixing.csv", {"t_C", "value", "dvalue_dT"});
     for (std::size_t i = 0; i < mixing.size(); ++i) {
       const data::CsvRow row = mixing[i];
-      t.mixing[mixing_key(std::string(row["set"]), std::string(row["kind"]), row["i"], row["j"], row["k"])]
-          .push_back({row.number("t_C"), row.number("value"), row.number("dvalue_dT"),
-                      std::string(row["quality"]), std::string(row["source"])});
+      Interaction who = interaction(row["kind"], row["i"], row["j"], row["k"]);
+      if (!row["k"].empty()) t.triplets.insert(who);
+      t.mixing[{std::string(row["set"]), std::move(who)}].push_back(
+          {row.number("t_C"), row.number("value"), row.number("dvalue_dT"), std::string(row["quality"]),
+           std::string(row["source"])});
     }
     for (auto& [key, rows] : t.binary)
       std::sort(rows.begin(), rows.end(), [](const auto& a, const auto& b) { return a.t_C < b.t_C; });
@@ -80,79 +84,105 @@ const Tables& tables() {
   return loaded;
 }
 
-/// The sets in the order in which they are asked. The warm tables of Na, K, Ca, Mg, H with Cl, SO4 replace
-/// the linear slopes above 50 degC, where those drift; at 25 degC itself the temperature tables by analogy
-/// add nothing to the published values they start from (engine/data/README.md).
-std::vector<std::string> set_order(Celsius t, AcidSet acid_set) {
-  std::vector<std::string> order{acid_set == AcidSet::sulfate ? "A" : "B"};
-  if (std::abs(t.v - reference_C) > 0.01) order.insert(order.end(), {"sulfate T", "chloride T"});
-  if (t.v > 50) order.emplace_back("warm");
-  order.insert(order.end(), {"main", "estimates"});
+/// The sets that give an interaction its value at 25 degC, in the order in which they are asked.
+std::vector<std::string> sets_at_25(ParameterSets sets) {
+  std::vector<std::string> order;
+  if (sets.zinc == ZincSet::chloride) order.emplace_back("zinc chloride");
+  if (sets.zinc == ZincSet::alkaline) order.emplace_back("zincate");
+  order.insert(order.end(), {sets.acid == AcidSet::sulfate ? "A" : "B", "main", "estimates"});
   return order;
 }
 
-/// Value at t from rows of rising temperature: linear between them, the end row held outside; a single row
-/// uses its slope. `no_slope` is set when a temperature shift of more than 5 degrees had to be left out.
-template <class Row, class Value, class Slope>
-double at_temperature(const std::vector<Row>& rows, Celsius t, Value value, Slope slope, bool& no_slope) {
-  if (rows.size() == 1) {
-    const double shift = t.v - rows[0].t_C, s = slope(rows[0]);
-    if (std::isnan(s)) {
-      no_slope = no_slope || (std::abs(shift) > 5 && value(rows[0]) != 0);
-      return value(rows[0]);
-    }
-    return value(rows[0]) + s * shift;
-  }
-  if (t.v < rows.front().t_C - 5 || t.v > rows.back().t_C + 5) no_slope = true;
-  const double x = std::clamp(t.v, rows.front().t_C, rows.back().t_C);
+/// The sets that tabulate an interaction against temperature.
+constexpr const char* temperature_sets[] = {"sulfate T", "chloride T", "warm", "estimates"};
+
+/// The rows that serve one interaction: those of its value at 25 degC and, where there is one, the table of
+/// its change with temperature.
+template <class Row>
+struct Served {
+  const std::vector<Row>* at_25 = nullptr;
+  const std::vector<Row>* table = nullptr;
+
+  explicit operator bool() const { return at_25 || table; }
+  const Row& row() const { return (at_25 ? at_25 : table)->front(); }
+};
+
+template <class Row>
+double interpolated(const std::vector<Row>& rows, double t_C, const auto& value) {
+  const double x = std::clamp(t_C, rows.front().t_C, rows.back().t_C);
   auto above =
       std::lower_bound(rows.begin(), rows.end(), x, [](const Row& r, double at) { return r.t_C < at; });
   if (above == rows.begin()) ++above;
   const auto below = above - 1;
-  const double fraction = (x - below->t_C) / (above->t_C - below->t_C);
-  return value(*below) + fraction * (value(*above) - value(*below));
+  return value(*below) + (x - below->t_C) / (above->t_C - below->t_C) * (value(*above) - value(*below));
+}
+
+/// Value at t: that of the table, where there is one, else that of 25 degC moved by its slope. Between 25
+/// degC and 25 degrees from it the table is reached gradually, so that every value is continuous in t, the
+/// published one of 25 degC is kept and so is the whole published table from 50 degC on. A table that begins
+/// at 25 degC leaves what is colder to the slope; elsewhere its end row is held outside. `no_slope` is set
+/// when a shift of more than 5 degrees had to be left out.
+template <class Row>
+double at_temperature(const Served<Row>& served, Celsius t, const auto& value, const auto& slope,
+                      bool& no_slope) {
+  constexpr double negligible_K = 5;
+  if (const auto* table = served.table;
+      table && !(t.v < reference_C && table->front().t_C >= reference_C && served.at_25)) {
+    if (t.v < table->front().t_C - negligible_K || t.v > table->back().t_C + negligible_K) no_slope = true;
+    const double there = interpolated(*table, t.v, value);
+    if (!served.at_25) return there;
+    constexpr double blended_K = 25;
+    const double blend = std::max(0.0, 1 - std::abs(t.v - reference_C) / blended_K);
+    return there + blend * (value(served.at_25->front()) - interpolated(*table, reference_C, value));
+  }
+  const Row& row = served.at_25->front();
+  const double shift = t.v - row.t_C, s = slope(row);
+  if (!std::isnan(s)) return value(row) + s * shift;
+  no_slope = no_slope || (std::abs(shift) > negligible_K && value(row) != 0);
+  return value(row);
 }
 
 bool is_published(std::string_view quality) { return quality.starts_with("published"); }
 
-/// Median parameters of the published pairs of one charge type, or nothing when there are fewer than three.
-std::optional<std::array<double, 3>> charge_type_median(int cation_charge, int anion_charge,
-                                                        const std::map<std::string, int>& charge_of) {
-  std::array<std::vector<double>, 3> values;
-  const bool both_divalent = cation_charge == 2 && anion_charge == -2;
-  for (const auto& [key, rows] : tables().binary) {
-    const auto& [set, cation, anion] = key;
-    if (set != "main" || charge_of.at(cation) != cation_charge || charge_of.at(anion) != anion_charge)
-      continue;
-    const BinaryRow& row = rows.front();
-    if (row.alpha1 != (both_divalent ? 1.4 : 2.0) || (!both_divalent && row.value[2] != 0)) continue;
-    for (std::size_t k = 0; k < 3; ++k) values[k].push_back(row.value[k]);
-  }
-  if (values[0].size() < 3) return std::nullopt;
-  std::array<double, 3> median{};
-  for (std::size_t k = 0; k < 3; ++k) {
-    std::sort(values[k].begin(), values[k].end());
-    median[k] = values[k][values[k].size() / 2];
-  }
-  return median;
-}
+/// What stands in for an unpublished pair: the medians of the published pairs of the same charges.
+struct ChargeType {
+  std::array<double, 3> median;  ///< beta0, beta1, beta2
+};
 
-const std::map<std::string, int>& charges_in_table() {
-  static const std::map<std::string, int> charges = [] {
-    std::map<std::string, int> all;
+/// By charge of cation and anion; only types with at least three published pairs of the usual form.
+const std::map<std::pair<int, int>, ChargeType>& charge_types() {
+  static const auto types = [] {
+    std::map<std::pair<int, int>, std::array<std::vector<double>, 3>> values;
     for (const auto& [key, rows] : tables().binary) {
-      all[std::get<1>(key)] = charge_in_name(std::get<1>(key));
-      all[std::get<2>(key)] = charge_in_name(std::get<2>(key));
+      const auto& [set, cation, anion] = key;
+      if (set != "main") continue;
+      const std::pair charges{charge_in_name(cation), charge_in_name(anion)};
+      const BinaryRow& row = rows.front();
+      const bool both_divalent = charges == std::pair{2, -2};
+      if (row.alpha1 != (both_divalent ? 1.4 : 2.0) || (!both_divalent && row.value[2] != 0)) continue;
+      for (std::size_t k = 0; k < 3; ++k) values[charges][k].push_back(row.value[k]);
     }
-    return all;
+    std::map<std::pair<int, int>, ChargeType> found;
+    for (auto& [charges, of] : values) {
+      if (of[0].size() < 3) continue;
+      ChargeType type{};
+      for (std::size_t k = 0; k < 3; ++k) {
+        std::sort(of[k].begin(), of[k].end());
+        type.median[k] = of[k][of[k].size() / 2];
+      }
+      found[charges] = type;
+    }
+    return found;
   }();
-  return charges;
+  return types;
 }
 
 class Collector {
  public:
-  Collector(std::span<const Solute> solutes, Celsius t, AcidSet acid_set)
-      : solutes_(solutes), t_(t), acid_set_(acid_set), order_(set_order(t, acid_set)) {}
+  Collector(std::span<const Solute> solutes, Celsius t, ParameterSets sets)
+      : solutes_(solutes), t_(t), sets_(sets), order_(sets_at_25(sets)) {
+    for (std::uint32_t i = 0; i < solutes.size(); ++i) position_[solutes[i].name] = i;
+  }
 
   PitzerParameters collect() {
     find_outside();
@@ -168,7 +198,7 @@ class Collector {
         else if (i != j)
           zi > 0 ? counter(i, j) : counter(j, i);
       }
-    triplets(n);
+    triplets();
     return std::move(found_);
   }
 
@@ -176,33 +206,46 @@ class Collector {
   using Kind = InteractionNote::Kind;
 
   const std::string& name(std::uint32_t i) const { return solutes_[i].name; }
+  bool away_from_25() const { return std::abs(t_.v - reference_C) > 0.01; }
 
-  void note(Kind kind, std::vector<std::uint32_t> who, std::string text, double limit = 0) {
+  InteractionNote& note(Kind kind, std::vector<std::uint32_t> who, const std::string& text) {
     std::string names;
     for (const std::uint32_t i : who) names += (names.empty() ? "" : " - ") + name(i);
-    found_.notes.push_back({kind, std::move(who), limit, names + ": " + text});
+    InteractionNote added;
+    added.kind = kind;
+    added.solutes = std::move(who);
+    added.text = names + ": " + text;
+    return found_.notes.emplace_back(std::move(added));
   }
 
-  const std::vector<BinaryRow>* binary_rows(std::uint32_t cation, std::uint32_t anion) const {
+  Served<BinaryRow> binary_rows(std::uint32_t cation, std::uint32_t anion) const {
     // Set B says nothing about calcium; the value of set A serves both (engine/data/README.md).
-    if (acid_set_ == AcidSet::chloride && name(cation) == "Ca^2+" && name(anion) == "HSO4^-") {
-      const auto found = tables().binary.find({"A", name(cation), name(anion)});
-      if (found != tables().binary.end()) return &found->second;
-    }
-    for (const std::string& set : order_) {
-      const auto found = tables().binary.find({set, name(cation), name(anion)});
-      if (found != tables().binary.end()) return &found->second;
-    }
-    return nullptr;
+    const bool calcium = name(cation) == "Ca^2+" && name(anion) == "HSO4^-";
+    return served(tables().binary, calcium && sets_.acid == AcidSet::chloride ? "A" : nullptr,
+                  [&](const std::string& set) {
+                    return BinaryKey{set, name(cation), name(anion)};
+                  });
   }
 
-  const std::vector<MixingRow>* mixing_rows(const char* kind, std::string_view i, std::string_view j,
-                                            std::string_view k = {}) const {
-    for (const std::string& set : order_) {
-      const auto found = tables().mixing.find(mixing_key(set, kind, i, j, k));
-      if (found != tables().mixing.end()) return &found->second;
-    }
-    return nullptr;
+  Served<MixingRow> mixing_rows(const Interaction& who) const {
+    return served(tables().mixing, nullptr, [&](const std::string& set) { return MixingKey{set, who}; });
+  }
+
+  template <class Key, class Row>
+  Served<Row> served(const std::map<Key, std::vector<Row>>& all, const char* first, const auto& key) const {
+    Served<Row> found;
+    const auto rows = [&](const std::string& set) {
+      const auto at = all.find(key(set));
+      return at == all.end() ? nullptr : &at->second;
+    };
+    if (first) found.at_25 = rows(first);
+    for (const std::string& set : order_)
+      if (const auto* candidate = rows(set); !found.at_25 && candidate && candidate->size() == 1)
+        found.at_25 = candidate;
+    for (const char* set : temperature_sets)
+      if (const auto* candidate = rows(set); !found.table && candidate && candidate->size() > 1)
+        found.table = candidate;
+    return found;
   }
 
   void find_outside() {
@@ -214,9 +257,9 @@ class Collector {
         if (solutes_[i].charge * solutes_[j].charge >= 0) continue;
         has_counter_ion = true;
         const auto [cation, anion] = solutes_[i].charge > 0 ? std::pair{i, j} : std::pair{j, i};
-        known = known || binary_rows(cation, anion) != nullptr;
+        known = known || binary_rows(cation, anion);
         // Only simple counter-ions decide: those of higher charge are themselves traces.
-        if (std::abs(solutes_[j].charge) <= 2) estimable = estimable && median(cation, anion).has_value();
+        if (std::abs(solutes_[j].charge) <= 2) estimable = estimable && type_of(cation, anion) != nullptr;
       }
       if (!has_counter_ion || known || estimable) continue;
       outside_[i] = true;
@@ -227,108 +270,139 @@ class Collector {
     }
   }
 
-  std::optional<std::array<double, 3>> median(std::uint32_t cation, std::uint32_t anion) const {
-    return charge_type_median(solutes_[cation].charge, solutes_[anion].charge, charges_in_table());
+  const ChargeType* type_of(std::uint32_t cation, std::uint32_t anion) const {
+    const auto found = charge_types().find({solutes_[cation].charge, solutes_[anion].charge});
+    return found == charge_types().end() ? nullptr : &found->second;
   }
 
   void counter(std::uint32_t cation, std::uint32_t anion) {
     const int zc = solutes_[cation].charge, za = solutes_[anion].charge;
-    const std::vector<BinaryRow>* rows = binary_rows(cation, anion);
+    const Served<BinaryRow> rows = binary_rows(cation, anion);
     if (!rows) {
-      const auto guess = median(cation, anion);
-      if (guess) {
+      const ChargeType* type = type_of(cation, anion);
+      if (type) {
         const bool both_divalent = zc == 2 && za == -2;
-        found_.binary.push_back(
-            {cation, anion, (*guess)[0], (*guess)[1], (*guess)[2], 0, both_divalent ? 1.4 : 2.0, 12});
+        found_.binary.push_back({cation, anion, type->median[0], type->median[1], type->median[2], 0,
+                                 both_divalent ? 1.4 : 2.0, 12});
       }
       note(Kind::missing, {cation, anion},
-           guess ? "not published; median of the published pairs of the same charges taken"
-                 : "not published; zero taken");
+           type ? "not published; median of the published pairs of the same charges taken"
+                : "not published; zero taken");
       return;
     }
-    const BinaryRow& row = rows->front();
+    const BinaryRow& row = rows.row();
     bool no_slope = false;
     std::array<double, 4> v{};
     for (std::size_t k = 0; k < 4; ++k)
       v[k] = at_temperature(
-          *rows, t_, [k](const BinaryRow& r) { return r.value[k]; },
+          rows, t_, [k](const BinaryRow& r) { return r.value[k]; },
           [k](const BinaryRow& r) { return r.slope[k]; }, no_slope);
     // Where beta0 or beta1 has a published slope, an empty slope of beta2 or C_phi means "none needed".
-    if (rows->size() == 1 && !(std::isnan(row.slope[0]) && std::isnan(row.slope[1]))) no_slope = false;
+    if (!rows.table && !(std::isnan(row.slope[0]) && std::isnan(row.slope[1]))) no_slope = false;
     found_.binary.push_back({cation, anion, v[0], v[1], v[2], v[3] / (2 * std::sqrt(std::abs(zc * za))),
                              row.alpha1, std::isnan(row.alpha2) ? 0 : row.alpha2});
-    if (!is_published(row.quality))
-      note(Kind::estimated, {cation, anion}, row.quality + " (" + row.source + ")");
+    note_quality(rows, {cation, anion}, "");
     if (no_slope)
       note(Kind::no_temperature_data, {cation, anion},
            "no temperature dependence published; the value at 25 degC taken");
-    if (!std::isnan(row.max_molality))
-      note(Kind::above_range, {cation, anion},
-           "parameters were fitted up to " + units::significant(row.max_molality, 3) + " mol/kg of the salt",
-           row.max_molality);
+    note_range(rows, cation, anion);
   }
 
-  double mixing_value(const std::vector<MixingRow>& rows, std::vector<std::uint32_t> who, const char* what) {
+  /// Notes what is not published: the value itself, or its change from 25 degC.
+  template <class Row>
+  void note_quality(const Served<Row>& rows, std::vector<std::uint32_t> who, const std::string& what) {
+    const Row& row = rows.row();
+    const Row* moved_by = rows.table ? &rows.table->front() : nullptr;
+    if (!is_published(row.quality))
+      note(Kind::estimated, std::move(who), what + row.quality + " (" + row.source + ")");
+    else if (away_from_25() && moved_by && !is_published(moved_by->quality))
+      note(Kind::estimated, std::move(who),
+           what + "temperature dependence: " + moved_by->quality + " (" + moved_by->source + ")");
+  }
+
+  /// What must not exceed the end of the fit; engine/data/README.md, column range_of.
+  void note_range(const Served<BinaryRow>& rows, std::uint32_t cation, std::uint32_t anion) {
+    const BinaryRow& row = rows.row();
+    // The tables were made for, or tested up to, saturation where they state no limit.
+    double limit = (rows.table && away_from_25() ? rows.table->front() : row).max_molality;
+    if (std::isnan(limit)) return;
+    std::vector<InteractionNote::Counted> counted;
+    std::string of = "the salt";
+    if (row.range_of == "ligand") {
+      limit *= -static_cast<double>(solutes_[cation].charge) / solutes_[anion].charge;
+      counted = {{anion, 1}};
+      of = name(anion) + ", on which the complexes inside the fit depend";
+    } else if (row.range_of == "acid") {
+      counted = {{anion, 0.5}};
+      if (const auto proton = position_.find("H^+"); proton != position_.end())
+        counted.push_back({proton->second, 0.5});
+      of = "sulfuric acid";
+    } else if (row.range_of == "alkali") {
+      if (const auto hydroxide = position_.find("OH^-"); hydroxide != position_.end())
+        counted = {{hydroxide->second, 1}};
+      of = "hydroxide";
+    }
+    InteractionNote& added =
+        note(Kind::above_range, {cation, anion},
+             "parameters were fitted up to " + units::significant(limit, 3) + " mol/kg of " + of);
+    added.limit_molal = limit;
+    added.counted = std::move(counted);
+  }
+
+  double mixing_value(const Served<MixingRow>& rows, std::vector<std::uint32_t> who, const char* what) {
     bool no_slope = false;
     const double value = at_temperature(
         rows, t_, [](const MixingRow& r) { return r.value; }, [](const MixingRow& r) { return r.slope; },
         no_slope);
-    if (!is_published(rows.front().quality))
-      note(Kind::estimated, std::move(who),
-           std::string(what) + " " + rows.front().quality + " (" + rows.front().source + ")");
+    note_quality(rows, std::move(who), std::string(what) + " ");
     return value;
   }
 
   void like(std::uint32_t i, std::uint32_t j) {
-    const std::vector<MixingRow>* rows = mixing_rows("theta", name(i), name(j));
-    const double theta = rows ? mixing_value(*rows, {i, j}, "theta") : 0;
+    const Served<MixingRow> rows = mixing_rows(interaction("theta", name(i), name(j), {}));
+    const double theta = rows ? mixing_value(rows, {i, j}, "theta") : 0;
     if (!rows) note(Kind::missing, {i, j}, "theta not published; zero taken");
     if (theta != 0 || solutes_[i].charge != solutes_[j].charge) found_.like_pairs.push_back({i, j, theta});
   }
 
   void neutral(std::uint32_t n, std::uint32_t other) {
-    const std::vector<MixingRow>* rows = mixing_rows("lambda", name(n), name(other));
+    const Served<MixingRow> rows = mixing_rows(interaction("lambda", name(n), name(other), {}));
     if (rows) {
-      const double lambda = mixing_value(*rows, {n, other}, "lambda");
+      const double lambda = mixing_value(rows, {n, other}, "lambda");
       if (lambda != 0) found_.neutral_pairs.push_back({n, other, lambda});
     } else if (n != other) {
       note(Kind::missing, {n, other}, "lambda not published; zero taken");
     }
   }
 
-  void triplets(std::uint32_t n) {
+  void triplets() {
     // Far fewer triplets are published than could be formed: walk the published ones and look the ions up.
-    std::map<std::string, std::uint32_t> position;
-    for (std::uint32_t i = 0; i < n; ++i)
-      if (!outside_[i]) position[name(i)] = i;
-    for (const auto& [key, unused] : tables().mixing) {
-      const auto& [set, kind, names] = key;
-      if (kind != "psi" && kind != "zeta") continue;
-      std::vector<std::uint32_t> who;
-      for (const std::string& member : names) {
-        const auto found = position.find(member);
-        if (found != position.end()) who.push_back(found->second);
-      }
-      if (who.size() != 3) continue;
-      const std::vector<MixingRow>* rows = mixing_rows(kind.c_str(), names[0], names[1], names[2]);
-      if (!rows || rows != &unused) continue;  // another set comes first, or this one is not in use
-      const double value = mixing_value(*rows, who, kind.c_str());
-      if (value != 0) found_.triplets.push_back({who[0], who[1], who[2], value});
+    for (const Interaction& who : tables().triplets) {
+      std::vector<std::uint32_t> at;
+      for (const std::string& member : who.second)
+        if (const auto found = position_.find(member); found != position_.end() && !outside_[found->second])
+          at.push_back(found->second);
+      if (at.size() != 3) continue;
+      const Served<MixingRow> rows = mixing_rows(who);
+      if (!rows) continue;  // only in a set that is not in use
+      const double value = mixing_value(rows, at, who.first.c_str());
+      if (value != 0) found_.triplets.push_back({at[0], at[1], at[2], value});
     }
   }
 
   std::span<const Solute> solutes_;
   Celsius t_;
-  AcidSet acid_set_;
+  ParameterSets sets_;
   std::vector<std::string> order_;
+  std::map<std::string, std::uint32_t> position_;
   std::vector<bool> outside_;
   PitzerParameters found_;
 };
 
 }  // namespace
 
-PitzerParameters pitzer_parameters(std::span<const Solute> solutes, Celsius t, AcidSet acid_set) {
-  return Collector(solutes, t, acid_set).collect();
+PitzerParameters pitzer_parameters(std::span<const Solute> solutes, Celsius t, ParameterSets sets) {
+  return Collector(solutes, t, sets).collect();
 }
 
 }  // namespace bathwright::activity

@@ -41,6 +41,6 @@ struct PitzerParameters {
 ///   cation - anion   median beta0, beta1, beta2 of the published pairs of the same charge type, C_phi = 0
 ///   ion without any published pair, of a charge type with fewer than three published pairs: outside the
 ///   model like - like      theta = 0 (the electrostatic E-theta stays) triplets, neutral - anything    0
-PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, AcidSet acid_set);
+PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, ParameterSets sets);
 
 }  // namespace bathwright::activity

@@ -63,20 +63,12 @@ Result<std::vector<std::string>> gas_and_solid_components(const Recipe& recipe,
   return components;
 }
 
-/// The regressed sets for mixtures with acid (engine/data/README.md): B where chloride is above a third of
-/// the sulfate.
-activity::AcidSet acid_set_for(const speciation::Composition& component_mol) {
-  const auto total = [&](const char* name) {
-    const auto found = component_mol.find(name);
-    return found == component_mol.end() ? 0.0 : found->second;
-  };
-  return activity::acid_set_for(total("Cl^-"), total("SO4^2-"));
-}
-
 Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
-  const Equilibria& equilibria = Equilibria::built_in(activity::convention(kind));
-  auto substances = read_ingredients(recipe, equilibria);
-  auto components = gas_and_solid_components(recipe, equilibria);
+  const activity::Convention convention = activity::convention(kind);
+  // What the ingredients are made of is the same in every set.
+  const Equilibria& any_set = Equilibria::built_in(convention);
+  auto substances = read_ingredients(recipe, any_set);
+  auto components = gas_and_solid_components(recipe, any_set);
   Problems problems;
   if (!substances) problems = substances.problems();
   if (!components)
@@ -89,10 +81,14 @@ Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
   for (const auto& [component, mol] : contents->component_mol)
     if (mol != 0) names.push_back(component);
   if (recipe.pH) names.push_back(recipe.counter_ion);
+  speciation::Composition total_molality = contents->component_mol;
+  for (auto& [component, amount] : total_molality) amount /= contents->water_kg;
+  const activity::ParameterSets sets = activity::parameter_sets_for(total_molality);
+  const Equilibria& equilibria = Equilibria::built_in(convention, sets.zinc);
   auto system = ChemicalSystem::make(equilibria, names);
   if (!system) return system.problems();
   auto solver = Solver::prepare(std::make_shared<const ChemicalSystem>(*std::move(system)), kind,
-                                recipe.temperature, acid_set_for(contents->component_mol));
+                                recipe.temperature, sets.acid);
   if (!solver) return solver.problems();
   auto rules = solid_rules(recipe, equilibria, *solver);
   if (!rules) return rules.problems();

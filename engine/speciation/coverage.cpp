@@ -17,11 +17,14 @@ double salt_molality(const Solver& solver, const Equilibrium& answer,
 
 namespace {
 
-/// Whether there is more of a salt than its parameters were fitted to. A fit that ends below 0.1 mol/kg ended
+/// Whether there is more than the parameters of a pair were fitted to. A fit that ends below 0.1 mol/kg ended
 /// where the salt alone saturates (gypsum at 0.016), not where its parameters do.
-bool beyond_fit(double salt_molality, double fitted_molality) {
+bool beyond_fit(const Solver& solver, const Equilibrium& answer, const activity::InteractionNote& note) {
   constexpr double margin = 1.05, saturation_limited = 0.1;
-  return fitted_molality >= saturation_limited && salt_molality > margin * fitted_molality;
+  double counted = 0;
+  for (const auto& [solute, weight] : note.counted) counted += weight * answer.molality[solute];
+  if (note.counted.empty()) counted = salt_molality(solver, answer, note.solutes);
+  return note.limit_molal >= saturation_limited && counted > margin * note.limit_molal;
 }
 
 }  // namespace
@@ -52,7 +55,7 @@ Coverage coverage(const Solver& solver, const Equilibrium& answer) {
         if (least > significant && std::abs(solver.temperature().v - 25) > 10) found.valid = false;
         break;
       case Kind::above_range:
-        if (!beyond_fit(salt_molality(solver, answer, note.solutes), note.limit_molal)) break;
+        if (!beyond_fit(solver, answer, note)) break;
         found.warnings.push_back(note.text);
         found.valid = false;
         break;

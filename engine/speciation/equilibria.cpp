@@ -47,19 +47,40 @@ struct Builder {
   std::vector<StatedSolid> solids, gases;
 };
 
-Builder read_tables(activity::Convention convention) {
-  // With interaction parameters the hydrated sulfates take the constants that were derived with them.
+/// The sets of constants and parameters that a choice loads. With interaction the hydrated sulfates take the
+/// constants that were derived with the parameters, hydrogensulfate that of the temperature tables.
+std::set<std::string_view> sets_in_use(activity::Convention convention, activity::ZincSet zinc) {
+  std::set<std::string_view> sets{"main"};
+  if (convention == activity::Convention::association) return sets;
+  sets.insert({"estimates", "A", "B", "warm", "sulfate T", "chloride T"});
+  if (zinc == activity::ZincSet::chloride) sets.insert("zinc chloride");
+  if (zinc == activity::ZincSet::alkaline) sets.insert("zincate");
+  return sets;
+}
+
+/// Adds a row, or puts it in the place of the row of the same name: a later set supersedes `main`.
+template <class Stated>
+void supersede(std::vector<Stated>& into, Stated row) {
+  const auto same =
+      std::find_if(into.begin(), into.end(), [&](const Stated& one) { return one.name == row.name; });
+  if (same == into.end())
+    into.push_back(std::move(row));
+  else
+    *same = std::move(row);
+}
+
+Builder read_tables(activity::Convention convention, const std::set<std::string_view>& sets) {
   const bool interaction = convention == activity::Convention::interaction;
   Builder found;
   const data::CsvTable species = data::built_in_table(
       "equilibria/species.csv", {"log10_K", "ionic_strength", "dH_kJ_mol", "dCp_J_molK", "uncertainty"});
   for (std::size_t i = 0; i < species.size(); ++i) {
     const data::CsvRow row = species[i];
-    if (row["set"] != "main") continue;
+    if (!sets.contains(row["set"])) continue;
     if (row["convention"] != "both" && (row["convention"] == "interaction") != interaction) continue;
-    found.species.push_back({std::string(row["species"]), std::string(row["reaction"]),
-                             std::string(row["source"]), row.where(), constant_in(row),
-                             row.number("ionic_strength")});
+    supersede(found.species, StatedSpecies{std::string(row["species"]), std::string(row["reaction"]),
+                                           std::string(row["source"]), row.where(), constant_in(row),
+                                           row.number("ionic_strength")});
   }
   const data::CsvTable pairs = data::built_in_table("activity/pitzer_binary.csv", {});
   for (std::size_t i = 0; i < pairs.size(); ++i)
@@ -82,18 +103,11 @@ Builder read_tables(activity::Convention convention) {
                         std::isnan(low) ? 0 : low,
                         std::isnan(high) ? 100 : high,
                         row["kinetics"] == "slow"};
-      const auto same =
-          std::find_if(into.begin(), into.end(), [&](const StatedSolid& s) { return s.name == phase.name; });
-      if (same == into.end())
-        into.push_back(std::move(phase));
-      else
-        *same = std::move(phase);  // a later set supersedes the row of the same solid
+      supersede(into, std::move(phase));
     }
   };
   read_phases("equilibria/solids.csv", "solid", found.solids,
-              [&](const data::CsvRow& row) {
-                return row["set"] == "main" || (interaction && row["set"] == "sulfate T");
-              },
+              [&](const data::CsvRow& row) { return sets.contains(row["set"]); },
               {"log10_K", "dH_kJ_mol", "dCp_J_molK", "uncertainty", "min_C", "max_C"});
   read_phases("equilibria/gases.csv", "gas", found.gases, [](const data::CsvRow&) { return true; },
               {"log10_K", "dH_kJ_mol", "uncertainty"});
@@ -118,42 +132,120 @@ void Constant::add(const Constant& other, double times) {
   has_dH = has_dH && other.has_dH;
 }
 
-const Equilibria& Equilibria::built_in(activity::Convention convention) {
-  const auto build = [](activity::Convention c) {
-    Builder tables = read_tables(c);
+const Equilibria& Equilibria::built_in(activity::Convention convention, activity::ZincSet zinc) {
+  using activity::Convention;
+  using activity::ZincSet;
+  const auto build = [](Convention c, ZincSet z) {
+    const auto sets = sets_in_use(c, z);
+    Builder tables = read_tables(c, sets);
     Equilibria all;
+    all.convention_ = c;
+    all.zinc_ = z;
+    if (c == Convention::interaction) {
+      const data::CsvTable pairs = data::built_in_table("activity/pitzer_binary.csv", {});
+      for (std::size_t i = 0; i < pairs.size(); ++i) {
+        const data::CsvRow row = pairs[i];
+        if (!sets.contains(row["set"])) continue;
+        const auto beside = row.list("beside");
+        const auto known = std::find_if(all.fits_.begin(), all.fits_.end(), [&](const Fit& fit) {
+          return fit.cation == row["cation"] && fit.anion == row["anion"];
+        });
+        if (known == all.fits_.end())
+          all.fits_.push_back(
+              {std::string(row["cation"]), std::string(row["anion"]), {beside.begin(), beside.end()}});
+        else
+          known->beside.insert(beside.begin(), beside.end());
+      }
+    }
     all.free_ions_ = std::move(tables.ions);
     all.stated_species_ = std::move(tables.species);
     all.stated_solids_ = std::move(tables.solids);
     all.stated_gases_ = std::move(tables.gases);
     [[maybe_unused]] const Outcome resolved = all.resolve();  // a test reads every row
     assert(resolved);
+    all.leave_out_held();
     return all;
   };
-  if (convention == activity::Convention::interaction) {
-    static const Equilibria interaction = build(activity::Convention::interaction);
-    return interaction;
+  if (convention == Convention::association) {
+    static const Equilibria association = build(Convention::association, ZincSet::dilute);
+    return association;
   }
-  static const Equilibria association = build(activity::Convention::association);
-  return association;
+  static const Equilibria dilute = build(Convention::interaction, ZincSet::dilute);
+  if (zinc == ZincSet::dilute) return dilute;
+  static const Equilibria chloride = build(Convention::interaction, ZincSet::chloride);
+  if (zinc == ZincSet::chloride) return chloride;
+  static const Equilibria alkaline = build(Convention::interaction, ZincSet::alkaline);
+  return alkaline;
+}
+
+namespace {
+
+/// Whether a is n c + k x with whole n, k >= 1.
+bool made_of_both(const Composition& a, const Composition& c, const Composition& x) {
+  const auto count = [](const Composition& of, const std::string& name) {
+    const auto found = of.find(name);
+    return found == of.end() ? 0.0 : found->second;
+  };
+  const bool of_these = std::all_of(a.begin(), a.end(), [&](const auto& entry) {
+    return c.contains(entry.first) || x.contains(entry.first);
+  });
+  if (!of_these) return false;
+  constexpr int most = 12;
+  for (int n = 1; n <= most; ++n)
+    for (int k = 1; k <= most; ++k) {
+      const auto fits = [&](const Composition& names) {
+        return std::all_of(names.begin(), names.end(), [&](const auto& entry) {
+          const std::string& name = entry.first;
+          return count(a, name) == n * count(c, name) + k * count(x, name);
+        });
+      };
+      if (fits(a) && fits(c) && fits(x)) return true;
+    }
+  return false;
+}
+
+}  // namespace
+
+const Equilibria::Fit* Equilibria::held_by(const SpeciesData& species) const {
+  const auto known = [&](const std::string& ion) { return species_.find(ion); };
+  for (const Fit& fit : fits_) {
+    const auto cation = known(fit.cation), anion = known(fit.anion);
+    if (cation == species_.end() || anion == species_.end() || fit.beside.contains(species.name)) continue;
+    if (species.name == fit.cation || species.name == fit.anion) continue;
+    if (made_of_both(species.made_of, cation->second.made_of, anion->second.made_of)) return &fit;
+  }
+  return nullptr;
+}
+
+void Equilibria::leave_out_held() {
+  std::vector<std::string> held;
+  for (const auto& [name, data] : species_)
+    if (held_by(data)) held.push_back(name);
+  for (const std::string& name : held) species_.erase(name);
 }
 
 Result<Equilibria> Equilibria::with(const std::vector<StatedSpecies>& species,
                                     const std::vector<StatedSolid>& solids) const {
   Equilibria all = *this;
   const auto merge = [](auto& into, const auto& added) {
-    for (const auto& one : added) {
-      const auto same =
-          std::find_if(into.begin(), into.end(), [&](const auto& s) { return s.name == one.name; });
-      if (same == into.end())
-        into.push_back(one);
-      else
-        *same = one;
-    }
+    for (const auto& one : added) supersede(into, one);
   };
   merge(all.stated_species_, species);
   merge(all.stated_solids_, solids);
   if (Outcome resolved = all.resolve(); !resolved) return resolved.problems();
+  Problems twice;
+  for (const StatedSpecies& one : species) {
+    const auto data = all.species_.find(one.name);
+    const Fit* fit = data == all.species_.end() ? nullptr : all.held_by(data->second);
+    if (fit)
+      twice.push_back({Fault::inconsistent_data, one.where,
+                       one.name + " counts an attraction twice: the interaction parameters of " +
+                           fit->cation + " with " + fit->anion + " hold it already",
+                       "no complex of these two ions alone",
+                       "Leave it out, or use the association convention."});
+  }
+  if (!twice.empty()) return twice;
+  all.leave_out_held();
   return all;
 }
 

@@ -7,9 +7,15 @@ double Equilibrium::pH() const { return -ln_activity[0] / std::numbers::ln10; }
 
 Result<Solver> Solver::prepare(std::shared_ptr<const ChemicalSystem> system, activity::ModelKind kind,
                                units::Celsius t, activity::AcidSet acid_set) {
+  if (system->convention() != activity::convention(kind))
+    return Problem{
+        Fault::inconsistent_data, std::string(activity::name(kind)),
+        "these equilibria belong to the other convention: an attraction would be counted twice or not "
+        "at all",
+        "Equilibria::built_in of the convention of the model", ""};
   std::vector<activity::Solute> solutes;
   for (const SystemSpecies& species : system->species()) solutes.push_back({species.name, species.charge});
-  auto model = activity::make_model(kind, solutes, t, acid_set);
+  auto model = activity::make_model(kind, solutes, t, {acid_set, system->zinc_set()});
   if (!model) return model.problems();
   Solver solver;
   solver.system_ = std::move(system);

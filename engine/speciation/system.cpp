@@ -19,6 +19,8 @@ std::optional<std::size_t> position(const Rows& rows, std::string_view name) {
 Result<ChemicalSystem> ChemicalSystem::make(const Equilibria& equilibria,
                                             const std::vector<std::string>& components) {
   ChemicalSystem system;
+  system.convention_ = equilibria.convention();
+  system.zinc_ = equilibria.zinc_set();
   system.components_.emplace_back("H^+");
   for (const std::string& name : components) {
     const auto& basis = equilibria.basis();

@@ -52,13 +52,13 @@ Recipe read_recipe(const std::string& conditions, const std::string& system) {
 }
 
 Result<Mixture> mix(const Recipe& recipe, double t_C, activity::ModelKind model) {
-  const auto& equilibria = speciation::Equilibria::built_in(activity::convention(model));
+  const activity::Convention convention = activity::convention(model);
   speciation::Composition total;
   double water_mol = 0;
   for (const auto& [text, mol] : recipe) {
     const auto formula = matter::Formula::parse(text);
     if (!formula) return formula.problems();
-    const auto parts = speciation::parts_of(*formula, equilibria);
+    const auto parts = speciation::parts_of(*formula, speciation::Equilibria::built_in(convention));
     if (!parts) return parts.problems();
     for (const auto& [name, count] : parts->basis) total[name] += mol * count;
     water_mol += mol * parts->water;
@@ -66,10 +66,12 @@ Result<Mixture> mix(const Recipe& recipe, double t_C, activity::ModelKind model)
   std::vector<std::string> names;
   for (const auto& [name, mol] : total)
     if (name != "H^+") names.push_back(name);
-  auto system = speciation::ChemicalSystem::make(equilibria, names);
+  const activity::ParameterSets sets = activity::parameter_sets_for(total);
+  auto system =
+      speciation::ChemicalSystem::make(speciation::Equilibria::built_in(convention, sets.zinc), names);
   if (!system) return system.problems();
   auto solver = speciation::Solver::prepare(
-      std::make_shared<const speciation::ChemicalSystem>(*std::move(system)), model, {t_C});
+      std::make_shared<const speciation::ChemicalSystem>(*std::move(system)), model, {t_C}, sets.acid);
   if (!solver) return solver.problems();
   Mixture mixture{std::make_shared<const speciation::Solver>(*std::move(solver)), {}};
   for (const std::string& name : mixture.solver->system().components())

@@ -23,7 +23,7 @@ inline Model model_of(ModelKind kind, const Names& names, units::Celsius t = roo
                       AcidSet acid_set = AcidSet::sulfate) {
   std::vector<Solute> solutes;
   for (const std::string& name : names) solutes.push_back({name, charge_in_name(name)});
-  auto model = make_model(kind, solutes, t, acid_set);
+  auto model = make_model(kind, solutes, t, {acid_set, ZincSet::dilute});
   REQUIRE(model);
   return *std::move(model);
 }

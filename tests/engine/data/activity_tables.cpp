@@ -61,6 +61,10 @@ TEST_CASE("Pitzer pairs: a cation, an anion, and numbers of a possible size", "[
     check_range(row, "dbeta2_dT", -0.6, 0.6);
     check_range(row, "dcphi_dT", -0.001, 0.001);
     check_range(row, "max_molality", 0.001, 20);
+    if (!row["range_of"].empty()) {
+      check_word(row, "range_of", {"ligand", "acid", "alkali"});
+      check_filled(row, {"max_molality"});
+    }
   });
 }
 

@@ -39,8 +39,13 @@ struct InteractionNote {
   Kind kind = Kind::missing;
   std::vector<std::uint32_t>
       solutes;             ///< whose molalities decide whether it matters: positions in the solute list
-  double limit_molal = 0;  ///< above_range: molality of the pure salt up to which the parameters were fitted
+  double limit_molal = 0;  ///< above_range: end of the fit, mol/kg
   std::string text;        ///< "Ni^2+ - HSO4^-: estimated (...)"
+  struct Counted {
+    std::uint32_t solute;
+    double weight;
+  };
+  std::vector<Counted> counted{};  ///< above_range: the sum that must not exceed the limit; none: the salt
 };
 
 /// One model, prepared for a fixed list of solutes at one temperature. Immutable: any number of threads may

@@ -3,10 +3,11 @@
 // bath type may add its own. Not for: numbers at one temperature (system.hpp).
 #pragma once
 
-#include <bathwright/activity/model.hpp>
+#include <bathwright/activity/make_model.hpp>
 #include <bathwright/base/result.hpp>
 #include <bathwright/units/quantity.hpp>
 #include <map>
+#include <set>
 #include <string>
 #include <vector>
 
@@ -73,13 +74,18 @@ struct StatedSolid {
 
 class Equilibria {
  public:
-  /// The built-in tables, for one data convention. Constants measured at an ionic strength are carried to
-  /// zero with the Davies equation (held at 1 mol/kg), and their uncertainty is widened: 0.1 up to 0.5
-  /// mol/kg, 0.3 up to 1, 0.6 above.
-  static const Equilibria& built_in(activity::Convention convention);
+  /// The built-in tables, for one data convention and, with interaction, one set for zinc. Constants measured
+  /// at an ionic strength are carried to zero with the Davies equation (held at 1 mol/kg), and their
+  /// uncertainty is widened: 0.1 up to 0.5 mol/kg, 0.3 up to 1, 0.6 above.
+  ///   No attraction is counted twice: with interaction, a complex made of nothing but a cation and an anion
+  /// whose parameters were fitted to their fully dissociated salt is inside those parameters and is left out
+  /// (NiCl^+, CuCl4^2-, AlSO4^+); those the fit was made with stay (column `beside` of pitzer_binary.csv).
+  static const Equilibria& built_in(activity::Convention convention,
+                                    activity::ZincSet zinc = activity::ZincSet::dilute);
 
   /// These equilibria with a bath type's own added; one that restates a known species or solid replaces it.
-  /// Fails where a reaction does not read, does not form its species, or leads back to itself.
+  /// Fails where a reaction does not read, does not form its species, or leads back to itself, and on a
+  /// species that is already inside the activity coefficients (see built_in).
   [[nodiscard]] Result<Equilibria> with(const std::vector<StatedSpecies>& species,
                                         const std::vector<StatedSolid>& solids) const;
 
@@ -88,9 +94,25 @@ class Equilibria {
   [[nodiscard]] const std::vector<GasData>& gases() const { return gases_; }
   /// Names that no reaction forms: what totals are counted in. H^+ is one of them, H2O is not listed.
   [[nodiscard]] const std::vector<std::string>& basis() const { return basis_; }
+  /// What they must be solved with.
+  [[nodiscard]] activity::Convention convention() const { return convention_; }
+  [[nodiscard]] activity::ZincSet zinc_set() const { return zinc_; }
 
  private:
+  /// An interaction that was fitted to a fully dissociated salt but for the complexes `beside` it.
+  struct Fit {
+    std::string cation, anion;
+    std::set<std::string> beside;
+  };
+
   Outcome resolve();
+  /// The fit that holds a species already; nothing where it may stand as a species.
+  const Fit* held_by(const SpeciesData& species) const;
+  void leave_out_held();
+
+  activity::Convention convention_ = activity::Convention::association;
+  activity::ZincSet zinc_ = activity::ZincSet::dilute;
+  std::vector<Fit> fits_;  ///< empty with association
 
   std::vector<std::string>
       free_ions_;  ///< known to the activity models, formed from nothing: NO3^-, Li^+, ClO4^-

@@ -35,6 +35,9 @@ class ChemicalSystem {
                                      const std::vector<std::string>& components);
 
   [[nodiscard]] const std::vector<std::string>& components() const { return components_; }
+  /// The convention and the set for zinc that its constants belong to.
+  [[nodiscard]] activity::Convention convention() const { return convention_; }
+  [[nodiscard]] activity::ZincSet zinc_set() const { return zinc_; }
   [[nodiscard]] const std::vector<SystemSpecies>& species() const { return species_; }
   [[nodiscard]] const std::vector<SystemSolid>& solids() const { return solids_; }
   [[nodiscard]] const std::vector<SystemSpecies>& gases() const { return gases_; }
@@ -45,6 +48,8 @@ class ChemicalSystem {
   [[nodiscard]] std::optional<std::size_t> gas(std::string_view name) const;
 
  private:
+  activity::Convention convention_ = activity::Convention::association;
+  activity::ZincSet zinc_ = activity::ZincSet::dilute;
   std::vector<std::string> components_;
   std::vector<SystemSpecies> species_;
   std::vector<SystemSolid> solids_;
