@@ -144,8 +144,11 @@ void check_chemistry(const bath::BathType& type, Report& report) {
   check_own_reactions(type, report);
   const auto all = Equilibria::built_in(type.convention).with(type.own_species, type.own_solids);
   if (!all) {
-    for (const Problem& problem : all.problems())
-      report.add({"", 0, problem.where.c_str()}, problem.what, problem.expected, problem.try_this);
+    for (const Problem& problem : all.problems()) {
+      // The report names the type itself.
+      const std::size_t id = problem.where.starts_with(type.id + ' ') ? type.id.size() + 1 : 0;
+      report.add({"", 0, problem.where.c_str() + id}, problem.what, problem.expected, problem.try_this);
+    }
     return;
   }
   check_components(type, *all, report);

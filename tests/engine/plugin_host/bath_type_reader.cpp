@@ -76,9 +76,14 @@ TEST_CASE("each fault of the tables is refused where it stands", "[failure][plug
       {"test-bath quantities row 2 counts", "terms that cannot be read",
        [](StatedBath& b) { b.quantities[1].counts = nullptr; }},
       {"test-bath own_species row 1 reaction", "does not balance: Cl, charge",
-       [](StatedBath& b) { b.own_species[0].reaction = "2 Ni^2+ + 2 Cl^- = Ni2Cl^3+"; }},
+       [](StatedBath& b) { b.own_species[0].reaction = "Ni^2+ + 2 Cl^- + H2O = NiClOH + H^+"; }},
       {"test-bath own_species row 1 reaction", "'Nj^2+' is no species",
-       [](StatedBath& b) { b.own_species[0].reaction = "2 Nj^2+ + Cl^- = Ni2Cl^3+"; }},
+       [](StatedBath& b) { b.own_species[0].reaction = "Nj^2+ + Cl^- + H2O = NiClOH + H^+"; }},
+      {"test-bath own_species row 1", "Ni2Cl^3+ counts an attraction twice",
+       [](StatedBath& b) {
+         b.own_species[0].name = "Ni2Cl^3+";
+         b.own_species[0].reaction = "2 Ni^2+ + Cl^- = Ni2Cl^3+";
+       }},
       {"test-bath own_species row 1 log10_K", "no source is given",
        [](StatedBath& b) { b.own_species[0].log10_K.source = 0; }},
       {"test-bath own_species row 1 log10_K", "is out of range",

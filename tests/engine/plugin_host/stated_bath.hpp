@@ -22,8 +22,8 @@ struct StatedBath {
   std::vector<bw_term> nickel = {{"Ni^2+", 1}}, chloride_ion = {{"Cl^-", 1}}, effects = {{"Cl^-", -0.1}};
   std::vector<bw_quantity> quantities = {{"Ni^2+", "nickel", "Ni^2+", nickel.data(), 1, BW_METAL, 0, 0},
                                          {"Cl^-", "chloride", "Cl^-", chloride_ion.data(), 1, BW_SALT, 0, 0}};
-  std::vector<bw_own_species> own_species = {{"Ni2Cl^3+",
-                                              "2 Ni^2+ + Cl^- = Ni2Cl^3+",
+  std::vector<bw_own_species> own_species = {{"NiClOH",
+                                              "Ni^2+ + Cl^- + H2O = NiClOH + H^+",
                                               {-1, 0.1, 1, BW_ESTIMATED},
                                               {5, open, 1, BW_ESTIMATED},
                                               {open, open, 0, 0},
