@@ -340,7 +340,7 @@ void cold_start(Workspace& w) {
     return;
   }
   double low = -20 * std::numbers::ln10, high = 3 * std::numbers::ln10;  // pH 20 to -3
-  for (int halving = 0; halving < 7; ++halving) {  // to a fifth of a pH unit
+  for (int halving = 0; halving < 7; ++halving) {                        // to a fifth of a pH unit
     const double middle = (low + high) / 2;
     (scale(middle, 2) > 0 ? high : low) = middle;
   }

@@ -13,8 +13,7 @@
 namespace bathwright::speciation {
 namespace {
 
-constexpr double saturated = 1e-9;        // ln units
-constexpr double scarce_fraction = 1e-6;  // a free ion below this share of its total needs a better basis
+constexpr double saturated = 1e-9;  // ln units
 
 /// Moves the coefficients a share of the way to those of the present composition; the largest change, ln
 /// units, of a kind that is not a trace.
@@ -161,28 +160,15 @@ bool concentrate(Workspace& w, Mark& start, int& iterations) {
   return true;
 }
 
-bool scarce(const Workspace& w, const SpeciesVector& m) {
-  Vector throughput = w.total.cwiseAbs();
-  for (Index i = 0; i < w.components(); ++i)
-    for (const auto& [j, count] : w.holders(i)) throughput(i) += std::abs(count) * m(j) * w.water_kg;
-  for (Index i = 0; i < w.components(); ++i) {
-    const double own = std::exp(std::min(w.x(i), 50.0)) * w.water_kg;
-    if (own < scarce_fraction * throughput(i)) return true;
-  }
-  return false;
-}
-
 /// Coupled Newton over a basis in which no component is scarce.
 bool settle(Workspace& w, int& iterations) {
   SpeciesVector m;
   w.molality(m);
-  if (scarce(w, m)) w.rebase(m);
+  w.rebase(m);
   if (!finish(w, iterations)) return false;
   // What was abundant on the way here may not be in the end.
   w.molality(m);
-  if (!scarce(w, m)) return true;
-  w.rebase(m);
-  return solve_coupled(w, iterations);
+  return !w.rebase(m) || solve_coupled(w, iterations);
 }
 
 bool solve_cold(Workspace& w, Mark& mark, const Task& task, const Constants& ln_K, int& iterations) {

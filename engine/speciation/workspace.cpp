@@ -110,7 +110,6 @@ void Workspace::compile(const Task& task) {
   for (const HeldGas& held : task.gases) held_gases_.push_back(held.gas);
   counter_ion_.reset();
   if (task.pH) counter_ion_ = task.pH->counter_ion;
-  rebased_ = false;
 
   row_of_.assign(all, -1);
   Index rows = 0;
@@ -122,7 +121,7 @@ void Workspace::compile(const Task& task) {
     return true;
   };
   const auto dense = [&](const std::vector<double>& made_of) {
-    Vector column = Vector::Zero(rows);
+    Vector column(rows);
     for (std::size_t i = 0; i < all; ++i)
       if (row_of_[i] >= 0) column(row_of_[i]) = made_of[i];
     return column;
@@ -135,6 +134,10 @@ void Workspace::compile(const Task& task) {
       species.push_back(j);
       kind.push_back(model_->kind_of()[j]);
     }
+  rebased_ = false;
+  inverse_.setIdentity(rows, rows);
+  members_.clear();
+  for (Index i = 0; i < rows; ++i) members_.push_back({false, static_cast<std::size_t>(i)});
   A.resize(rows, static_cast<Index>(species.size()));
   water.resize(A.cols());
   ln_K.resize(A.cols());
@@ -193,13 +196,15 @@ void Workspace::fill(const Task& task, const Constants& constants) {
     }
   if (!rebased_) return;
   // Over the members of another basis.
-  Vector K(components());
+  Vector K(components()), h(components());
   for (Index i = 0; i < components(); ++i) {
-    const BasisMember& member = members_[static_cast<std::size_t>(i)];
-    K(i) = member.is_phase ? -phases[member.index].ln_K : ln_K(static_cast<Index>(member.index));
+    const auto [is_phase, index] = members_[static_cast<std::size_t>(i)];
+    K(i) = is_phase ? -phases[index].ln_K : ln_K(static_cast<Index>(index));
+    h(i) = is_phase ? solver_->system().solids()[phases[index].index].water
+                    : solver_->system().species()[species[index]].water;
   }
   total = Vector(inverse_.lazyProduct(total));
-  total_water -= total.dot(members_water_);
+  total_water -= total.dot(h);
   for (Index j = 0; j < count(); ++j) ln_K(j) -= A.col(j).dot(K);
   for (Phase& phase : phases) phase.ln_K += phase.condition.dot(K);
 }
@@ -214,14 +219,18 @@ void Workspace::list_entries() {
     if (water(j) != 0) entries_.push_back({static_cast<std::uint16_t>(components()), water(j)});
   }
   first_.push_back(entries_.size());
-  holders_.clear();
-  first_holder_.clear();
-  for (Index i = 0; i < components(); ++i) {
-    first_holder_.push_back(holders_.size());
-    for (Index j = 0; j < count(); ++j)
-      if (A(i, j) != 0) holders_.push_back({j, A(i, j)});
-  }
-  first_holder_.push_back(holders_.size());
+  // The same entries row by row: count, then place.
+  const auto rows = static_cast<std::size_t>(components());
+  first_holder_.assign(rows + 1, 0);
+  for (const Entry& entry : entries_)
+    if (entry.row < rows) ++first_holder_[entry.row + 1u];
+  for (std::size_t i = 0; i < rows; ++i) first_holder_[i + 1] += first_holder_[i];
+  holders_.resize(first_holder_[rows]);
+  std::array<std::size_t, most_rows> next{};
+  std::copy_n(first_holder_.begin(), rows, next.begin());
+  for (Index j = 0; j < count(); ++j)
+    for (const Entry* e = begin(j); e != end(j); ++e)
+      if (e->row < rows) holders_[next[e->row]++] = {j, e->value};
 }
 
 void Workspace::ln_molality(SpeciesVector& result) const {
@@ -246,72 +255,84 @@ void Workspace::sum_kinds(const SpeciesVector& molality, SpeciesVector& in_kind)
   for (Index j = 0; j < count(); ++j) in_kind(kind[static_cast<std::size_t>(j)]) += molality(j);
 }
 
-void Workspace::rebase(const SpeciesVector& m) {
-  // Gaussian elimination over the species and present solids in order of abundance picks the most abundant
-  // independent ones. A solid in the basis keeps the noise of its amount out of what is left dissolved.
-  const auto amount = [&](const BasisMember& member) {
-    return member.is_phase ? phases[member.index].mol : m(static_cast<Index>(member.index)) * water_kg;
-  };
-  members_.clear();
-  for (std::size_t j = 0; j < species.size(); ++j) members_.push_back({false, j});
+bool Workspace::rebase(const SpeciesVector& m) {
+  // A component is scarce when its own species holds next to nothing of it: its balance then says nothing
+  // about it. Two rounds a component are ample: a swap may make another one scarce.
+  bool swapped = false;
+  for (Index round = 0; round < 2 * components(); ++round) {
+    const Index scarce = scarce_component(m);
+    if (scarce < 0) break;
+    const BasisMember member = most_abundant_holder(scarce, m);
+    if (member == members_[static_cast<std::size_t>(scarce)]) break;
+    exchange(scarce, member);
+    swapped = true;
+  }
+  if (swapped) list_entries();
+  return swapped;
+}
+
+Index Workspace::scarce_component(const SpeciesVector& m) const {
+  constexpr double scarce_fraction = 1e-6;
+  Vector throughput = total.cwiseAbs();
+  for (Index j = 0; j < count(); ++j)
+    for (Index i = 0; i < components(); ++i) throughput(i) += std::abs(A(i, j)) * m(j) * water_kg;
+  for (Index i = 0; i < components(); ++i)
+    if (std::exp(std::min(x(i), 50.0)) * water_kg < scarce_fraction * throughput(i)) return i;
+  return -1;
+}
+
+Workspace::BasisMember Workspace::most_abundant_holder(Index component, const SpeciesVector& m) const {
+  // A solid in the basis keeps the noise of its amount out of what is left dissolved.
+  constexpr double part_of_it = 1e-9;
+  BasisMember most = members_[static_cast<std::size_t>(component)];
+  double largest = 0;
+  for (Index j = 0; j < count(); ++j)
+    if (std::abs(A(component, j)) > part_of_it && m(j) * water_kg > largest) {
+      largest = m(j) * water_kg;
+      most = {false, static_cast<std::size_t>(j)};
+    }
   for (std::size_t k = 0; k < phases.size(); ++k)
-    if (phases[k].kind == Phase::Kind::precipitate && phases[k].active) members_.push_back({true, k});
-  std::sort(members_.begin(), members_.end(), [&](const BasisMember& a, const BasisMember& b) {
-    const double left = amount(a), right = amount(b);
-    if (left != right) return left > right;
-    return a.is_phase != b.is_phase ? b.is_phase : a.index < b.index;
-  });
-  const auto made_of = [&](const BasisMember& member) -> Vector {
-    if (member.is_phase) return phases[member.index].condition;
-    return A.col(static_cast<Index>(member.index));
+    if (phases[k].kind == Phase::Kind::precipitate && phases[k].active && phases[k].mol > largest &&
+        std::abs(phases[k].condition(component)) > part_of_it) {
+      largest = phases[k].mol;
+      most = {true, k};
+    }
+  return most;
+}
+
+void Workspace::exchange(Index i, BasisMember member) {
+  const auto row = static_cast<Index>(member.index);
+  const Vector made_of = member.is_phase ? phases[member.index].condition : Vector(A.col(row));
+  const double K = member.is_phase ? -phases[member.index].ln_K : ln_K(row);
+  const double h = member.is_phase ? phases[member.index].water : water(row);
+  x(i) = K + h * ln_aw + made_of.dot(x);
+  // Over the new basis: c_i / d_i of the new member, the rest of c less what that brings.
+  const auto rewrite = [&](auto&& column) {
+    const double share = to_simple_fraction(column(i) / made_of(i));
+    if (share == 0) return 0.0;
+    for (Index k = 0; k < components(); ++k)
+      if (made_of(k) != 0) column(k) = k == i ? share : to_simple_fraction(column(k) - share * made_of(k));
+    return share;
   };
-  const Index n = components();
-  Table B(n, n), eliminated(n, n);
-  Vector K(n), h(n);
-  std::array<Index, most_rows> pivots{};
-  Index chosen = 0;
-  for (std::size_t c = 0; c < members_.size() && chosen < n; ++c) {
-    const BasisMember member = members_[c];
-    Vector column = made_of(member);
-    for (Index k = 0; k < chosen; ++k)
-      column -= column(pivots[static_cast<std::size_t>(k)]) * eliminated.col(k);
-    Index pivot = 0;
-    const double size = column.cwiseAbs().maxCoeff(&pivot);
-    if (size < 1e-9) continue;
-    B.col(chosen) = made_of(member);
-    K(chosen) = member.is_phase ? -phases[member.index].ln_K : ln_K(static_cast<Index>(member.index));
-    h(chosen) = member.is_phase ? phases[member.index].water : water(static_cast<Index>(member.index));
-    eliminated.col(chosen) = column / column(pivot);
-    pivots[static_cast<std::size_t>(chosen)] = pivot;
-    members_[static_cast<std::size_t>(chosen)] = member;
-    ++chosen;
-  }
-  const Table inverse = Table(B.inverse()).unaryExpr(&to_simple_fraction);
-  x = Vector(K + h * ln_aw + B.transpose().lazyProduct(x));
-  total = Vector(inverse.lazyProduct(total));
-  total_water -= total.dot(h);
-  for (Index j = 0; j < count(); ++j) {
-    A.col(j) = Vector(inverse.lazyProduct(A.col(j))).unaryExpr(&to_simple_fraction);
-    ln_K(j) -= A.col(j).dot(K);
-    water(j) -= A.col(j).dot(h);
-  }
+  for (Index j = 0; j < count(); ++j)
+    if (A(i, j) != 0) {
+      const double share = rewrite(A.col(j));
+      ln_K(j) -= share * K;
+      water(j) -= share * h;
+    }
   for (Phase& phase : phases) {
-    phase.condition = Vector(inverse.lazyProduct(phase.condition));
-    phase.supply = Vector(inverse.lazyProduct(phase.supply));
-    phase.ln_K += phase.condition.dot(K);
-    phase.water -= phase.condition.dot(h);
-    phase.supply_water -= phase.supply.dot(h);
+    const double share = rewrite(phase.condition), supplied = rewrite(phase.supply);
+    phase.ln_K += share * K;
+    phase.water -= share * h;
+    phase.supply_water -= supplied * h;
   }
-  list_entries();
-  // For reload(): the way from the components, whatever the basis was before.
-  inverse_ = rebased_ ? Table(inverse.lazyProduct(inverse_)).unaryExpr(&to_simple_fraction) : inverse;
+  for (Index c = 0; c < inverse_.cols(); ++c) rewrite(inverse_.col(c));
+  const double of_member = total(i) / made_of(i);
+  total -= of_member * made_of;
+  total(i) = of_member;
+  total_water -= of_member * h;
+  members_[static_cast<std::size_t>(i)] = member;
   rebased_ = true;
-  members_water_.resize(n);
-  for (Index i = 0; i < n; ++i) {
-    const auto [is_phase, index] = members_[static_cast<std::size_t>(i)];
-    members_water_(i) = is_phase ? solver_->system().solids()[phases[index].index].water
-                                 : solver_->system().species()[species[index]].water;
-  }
 }
 
 }  // namespace bathwright::speciation

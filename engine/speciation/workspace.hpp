@@ -64,8 +64,10 @@ class Workspace : public State {
   /// Sums over each kind of solute.
   void sum_kinds(const SpeciesVector& molality, SpeciesVector& in_kind) const;
 
-  /// Rewrites everything over the most abundant independent species and present solids. x moves with it.
-  void rebase(const SpeciesVector& molality);
+  /// Where a component's own species holds less than 1e-6 of it, puts the most abundant species or present
+  /// solid that holds it in its place, and rewrites everything over the new basis. x moves with it. Returns
+  /// whether anything changed.
+  bool rebase(const SpeciesVector& molality);
 
   Stoichiometry A;         ///< components x species
   SpeciesVector water;     ///< H2O per species
@@ -107,10 +109,14 @@ class Workspace : public State {
   struct BasisMember {
     bool is_phase;
     std::size_t index;  ///< in `species` or `phases`
+    bool operator==(const BasisMember&) const = default;
   };
   void compile(const Task& task);
   void fill(const Task& task, const Constants& ln_K);
   void list_entries();
+  [[nodiscard]] Index scarce_component(const SpeciesVector& molality) const;
+  [[nodiscard]] BasisMember most_abundant_holder(Index component, const SpeciesVector& molality) const;
+  void exchange(Index component, BasisMember member);
   [[nodiscard]] bool same_problem(const Task& task) const;
 
   const Solver* solver_;
@@ -127,7 +133,6 @@ class Workspace : public State {
   bool rebased_ = false;
   std::vector<BasisMember> members_;
   Table inverse_;  ///< basis over components -> basis over members
-  Vector members_water_;
 };
 
 }  // namespace bathwright::speciation
