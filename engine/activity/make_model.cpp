@@ -2,6 +2,7 @@
 
 #include "charge_models.hpp"
 #include "pitzer_model.hpp"
+#include "sit_model.hpp"
 
 namespace bathwright::activity {
 
@@ -36,6 +37,9 @@ Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::spa
       break;
     case ModelKind::debye_huckel:
       model = std::make_unique<DebyeHueckelModel>(solutes, t);
+      break;
+    case ModelKind::sit:
+      model = std::make_unique<SitModel>(solutes, t);
       break;
     case ModelKind::pitzer:
       model = std::make_unique<PitzerModel>(solutes, t, pitzer_parameters(solutes, t, sets));

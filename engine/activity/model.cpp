@@ -11,6 +11,8 @@ std::string_view name(ModelKind kind) {
       return "davies";
     case ModelKind::debye_huckel:
       return "debye-huckel";
+    case ModelKind::sit:
+      return "sit";
     case ModelKind::pitzer:
       return "pitzer";
   }

@@ -144,15 +144,31 @@ double at_temperature(const Served<Row>& served, Celsius t, const auto& value, c
 
 bool is_published(std::string_view quality) { return quality.starts_with("published"); }
 
+/// The value below which 68 % of the magnitudes stay.
+double spread(std::vector<double> values) {
+  constexpr double fraction = 0.68;
+  for (double& value : values) value = std::abs(value);
+  std::sort(values.begin(), values.end());
+  return values[static_cast<std::size_t>(fraction * static_cast<double>(values.size() - 1) + 0.5)];
+}
+
 /// What stands in for an unpublished pair: the medians of the published pairs of the same charges.
 struct ChargeType {
   std::array<double, 3> median;  ///< beta0, beta1, beta2
+  std::size_t pairs;
+  double u_ln_gamma;  ///< spread of 2 B at 1 mol/kg about that of the median
 };
+
+/// 2 B of a pair at an ionic strength of 1 mol/kg: ln gamma of each ion per mol/kg of the other.
+double twice_B(const std::array<double, 3>& beta, double alpha1, double alpha2) {
+  const auto g = [](double x) { return 2 * (1 - (1 + x) * std::exp(-x)) / (x * x); };
+  return 2 * (beta[0] + beta[1] * g(alpha1) + (beta[2] == 0 ? 0 : beta[2] * g(alpha2)));
+}
 
 /// By charge of cation and anion; only types with at least three published pairs of the usual form.
 const std::map<std::pair<int, int>, ChargeType>& charge_types() {
   static const auto types = [] {
-    std::map<std::pair<int, int>, std::array<std::vector<double>, 3>> values;
+    std::map<std::pair<int, int>, std::vector<std::array<double, 3>>> pairs;
     for (const auto& [key, rows] : tables().binary) {
       const auto& [set, cation, anion] = key;
       if (set != "main") continue;
@@ -160,21 +176,60 @@ const std::map<std::pair<int, int>, ChargeType>& charge_types() {
       const BinaryRow& row = rows.front();
       const bool both_divalent = charges == std::pair{2, -2};
       if (row.alpha1 != (both_divalent ? 1.4 : 2.0) || (!both_divalent && row.value[2] != 0)) continue;
-      for (std::size_t k = 0; k < 3; ++k) values[charges][k].push_back(row.value[k]);
+      pairs[charges].push_back({row.value[0], row.value[1], row.value[2]});
     }
     std::map<std::pair<int, int>, ChargeType> found;
-    for (auto& [charges, of] : values) {
-      if (of[0].size() < 3) continue;
+    for (const auto& [charges, of] : pairs) {
+      if (of.size() < 3) continue;
       ChargeType type{};
+      type.pairs = of.size();
       for (std::size_t k = 0; k < 3; ++k) {
-        std::sort(of[k].begin(), of[k].end());
-        type.median[k] = of[k][of[k].size() / 2];
+        std::vector<double> values;
+        for (const auto& beta : of) values.push_back(beta[k]);
+        std::sort(values.begin(), values.end());
+        type.median[k] = values[values.size() / 2];
       }
+      const double alpha1 = charges == std::pair{2, -2} ? 1.4 : 2.0;
+      std::vector<double> off;
+      for (const auto& beta : of) off.push_back(twice_B(beta, alpha1, 12) - twice_B(type.median, alpha1, 12));
+      type.u_ln_gamma = spread(std::move(off));
       found[charges] = type;
     }
     return found;
   }();
   return types;
+}
+
+/// The uncertainties of what is not published, from the spread of what is (pitzer_parameters.hpp).
+struct Doubts {
+  double theta, lambda, psi;  ///< of ln gamma per mol/kg (psi, zeta: per mol2/kg2)
+  double slope_per_K;         ///< of ln gamma per mol/kg and K, for each product of charges
+};
+
+const Doubts& doubts() {
+  static const Doubts found = [] {
+    std::map<std::string, std::vector<double>> values;
+    for (const auto& [key, rows] : tables().mixing)
+      if (key.first == "main") values[key.second.first].push_back(rows.front().value);
+    std::vector<double> slopes;
+    for (const auto& [key, rows] : tables().binary) {
+      const BinaryRow& row = rows.front();
+      if (std::get<0>(key) != "main" || std::isnan(row.slope[0])) continue;
+      const double product = std::abs(charge_in_name(std::get<1>(key)) * charge_in_name(std::get<2>(key)));
+      slopes.push_back(
+          twice_B({row.slope[0], std::isnan(row.slope[1]) ? 0 : row.slope[1], 0}, row.alpha1, 12) / product);
+    }
+    return Doubts{2 * spread(values["theta"]), 2 * spread(values["lambda"]), spread(values["psi"]),
+                  spread(std::move(slopes))};
+  }();
+  return found;
+}
+
+/// The part of that spread which is left for a value that is no published fit, by its quality.
+double left_of_spread(std::string_view quality) {
+  if (quality == "regressed" || quality == "analogy, tested" || quality == "imposed") return 0.05;
+  if (quality == "regressed, transferred" || quality == "analogy, weakly tested") return 0.25;
+  return 0.5;
 }
 
 class Collector {
@@ -206,6 +261,9 @@ class Collector {
   using Kind = InteractionNote::Kind;
 
   const std::string& name(std::uint32_t i) const { return solutes_[i].name; }
+  int charge_product(const std::vector<std::uint32_t>& pair) const {
+    return solutes_[pair[0]].charge * solutes_[pair[1]].charge;
+  }
   bool away_from_25() const { return std::abs(t_.v - reference_C) > 0.01; }
 
   InteractionNote& note(Kind kind, std::vector<std::uint32_t> who, const std::string& text) {
@@ -275,6 +333,14 @@ class Collector {
     return found == charge_types().end() ? nullptr : &found->second;
   }
 
+  /// Of ln gamma per mol/kg, for a pair about which nothing is published.
+  double u_of_pair(std::uint32_t cation, std::uint32_t anion) const {
+    constexpr std::size_t enough_pairs = 5;
+    const ChargeType* type = type_of(cation, anion);
+    if (type && type->pairs >= enough_pairs) return type->u_ln_gamma;
+    return charge_types().at({1, -1}).u_ln_gamma * std::abs(solutes_[cation].charge * solutes_[anion].charge);
+  }
+
   void counter(std::uint32_t cation, std::uint32_t anion) {
     const int zc = solutes_[cation].charge, za = solutes_[anion].charge;
     const Served<BinaryRow> rows = binary_rows(cation, anion);
@@ -287,7 +353,8 @@ class Collector {
       }
       note(Kind::missing, {cation, anion},
            type ? "not published; median of the published pairs of the same charges taken"
-                : "not published; zero taken");
+                : "not published; zero taken")
+          .u_ln_gamma = u_of_pair(cation, anion);
       return;
     }
     const BinaryRow& row = rows.row();
@@ -301,23 +368,28 @@ class Collector {
     if (!rows.table && !(std::isnan(row.slope[0]) && std::isnan(row.slope[1]))) no_slope = false;
     found_.binary.push_back({cation, anion, v[0], v[1], v[2], v[3] / (2 * std::sqrt(std::abs(zc * za))),
                              row.alpha1, std::isnan(row.alpha2) ? 0 : row.alpha2});
-    note_quality(rows, {cation, anion}, "");
+    note_quality(rows, {cation, anion}, "", u_of_pair(cation, anion));
     if (no_slope)
       note(Kind::no_temperature_data, {cation, anion},
-           "no temperature dependence published; the value at 25 degC taken");
+           "no temperature dependence published; the value at 25 degC taken")
+          .u_ln_gamma = doubts().slope_per_K * std::abs(zc * za * (t_.v - reference_C));
     note_range(rows, cation, anion);
   }
 
   /// Notes what is not published: the value itself, or its change from 25 degC.
   template <class Row>
-  void note_quality(const Served<Row>& rows, std::vector<std::uint32_t> who, const std::string& what) {
+  void note_quality(const Served<Row>& rows, std::vector<std::uint32_t> who, const std::string& what,
+                    double u_unknown) {
     const Row& row = rows.row();
     const Row* moved_by = rows.table ? &rows.table->front() : nullptr;
     if (!is_published(row.quality))
-      note(Kind::estimated, std::move(who), what + row.quality + " (" + row.source + ")");
+      note(Kind::estimated, std::move(who), what + row.quality + " (" + row.source + ")").u_ln_gamma =
+          u_unknown * left_of_spread(row.quality);
     else if (away_from_25() && moved_by && !is_published(moved_by->quality))
-      note(Kind::estimated, std::move(who),
-           what + "temperature dependence: " + moved_by->quality + " (" + moved_by->source + ")");
+      note(Kind::estimated, who,
+           what + "temperature dependence: " + moved_by->quality + " (" + moved_by->source + ")")
+          .u_ln_gamma = doubts().slope_per_K * left_of_spread(moved_by->quality) *
+                        std::abs(charge_product(who) * (t_.v - reference_C));
   }
 
   /// What must not exceed the end of the fit; engine/data/README.md, column range_of.
@@ -349,29 +421,30 @@ class Collector {
     added.counted = std::move(counted);
   }
 
-  double mixing_value(const Served<MixingRow>& rows, std::vector<std::uint32_t> who, const char* what) {
+  double mixing_value(const Served<MixingRow>& rows, std::vector<std::uint32_t> who, const char* what,
+                      double u_unknown) {
     bool no_slope = false;
     const double value = at_temperature(
         rows, t_, [](const MixingRow& r) { return r.value; }, [](const MixingRow& r) { return r.slope; },
         no_slope);
-    note_quality(rows, std::move(who), std::string(what) + " ");
+    note_quality(rows, std::move(who), std::string(what) + " ", u_unknown);
     return value;
   }
 
   void like(std::uint32_t i, std::uint32_t j) {
     const Served<MixingRow> rows = mixing_rows(interaction("theta", name(i), name(j), {}));
-    const double theta = rows ? mixing_value(rows, {i, j}, "theta") : 0;
-    if (!rows) note(Kind::missing, {i, j}, "theta not published; zero taken");
+    const double theta = rows ? mixing_value(rows, {i, j}, "theta", doubts().theta) : 0;
+    if (!rows) note(Kind::missing, {i, j}, "theta not published; zero taken").u_ln_gamma = doubts().theta;
     if (theta != 0 || solutes_[i].charge != solutes_[j].charge) found_.like_pairs.push_back({i, j, theta});
   }
 
   void neutral(std::uint32_t n, std::uint32_t other) {
     const Served<MixingRow> rows = mixing_rows(interaction("lambda", name(n), name(other), {}));
     if (rows) {
-      const double lambda = mixing_value(rows, {n, other}, "lambda");
+      const double lambda = mixing_value(rows, {n, other}, "lambda", doubts().lambda);
       if (lambda != 0) found_.neutral_pairs.push_back({n, other, lambda});
     } else if (n != other) {
-      note(Kind::missing, {n, other}, "lambda not published; zero taken");
+      note(Kind::missing, {n, other}, "lambda not published; zero taken").u_ln_gamma = doubts().lambda;
     }
   }
 
@@ -385,7 +458,7 @@ class Collector {
       if (at.size() != 3) continue;
       const Served<MixingRow> rows = mixing_rows(who);
       if (!rows) continue;  // only in a set that is not in use
-      const double value = mixing_value(rows, at, who.first.c_str());
+      const double value = mixing_value(rows, at, who.first.c_str(), doubts().psi);
       if (value != 0) found_.triplets.push_back({at[0], at[1], at[2], value});
     }
   }

@@ -37,7 +37,15 @@ struct PitzerParameters {
   std::vector<InteractionNote> notes;
 };
 
-/// Rules for what is not published, each listed in the notes:
+/// Rules for what is not published, each listed in the notes, with a standard uncertainty of ln gamma per
+/// mol/kg taken from the spread (68 %) of what is published:
+///   cation - anion   of 2 B at 1 mol/kg among the pairs of the same charges; with fewer than five of them
+///                    |z+ z-| times that of the 1-1 pairs
+///   theta, lambda    twice the spread of the published values; psi and zeta: their spread, per mol2/kg2
+///   temperature      of the published slopes over |z+ z-|, times |z+ z- (t - 25)|
+///   half of it for an estimate or analogy, a quarter where weakly tested or transferred, a twentieth where
+///                    regressed or tested on data
+/// The rules:
 ///   cation - anion   median beta0, beta1, beta2 of the published pairs of the same charge type, C_phi = 0
 ///   ion without any published pair, of a charge type with fewer than three published pairs: outside the
 ///   model like - like      theta = 0 (the electrostatic E-theta stays) triplets, neutral - anything    0

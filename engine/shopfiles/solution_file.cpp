@@ -14,23 +14,19 @@ using solution::MayForm;
 
 /// Nothing for "auto".
 std::optional<activity::ModelKind> read_model(Table& root) {
-  constexpr std::string_view automatic = "auto", expected = R"("auto", "davies", "debye-huckel" or "pitzer")";
+  constexpr std::string_view automatic = "auto",
+                             expected = R"("auto", "davies", "debye-huckel", "sit" or "pitzer")";
   const std::string model = root.text({"model", optional, R"("auto")"});
   if (model.empty() || model == automatic) return std::nullopt;
   std::vector<std::string> names{std::string(automatic)};
-  for (const auto kind :
-       {activity::ModelKind::davies, activity::ModelKind::debye_huckel, activity::ModelKind::pitzer}) {
+  for (const auto kind : {activity::ModelKind::davies, activity::ModelKind::debye_huckel,
+                          activity::ModelKind::sit, activity::ModelKind::pitzer}) {
     names.emplace_back(activity::name(kind));
     if (model == names.back()) return kind;
   }
-  if (model == "sit") {
-    root.report("model", "\"sit\" is not in this version", std::string(expected),
-                R"("auto" takes the best that the data allow.)");
-  } else {
-    const auto meant = nearest(model, names);
-    root.report("model", '"' + printable(model) + "\" is not a model", std::string(expected),
-                meant ? "Did you mean " + *meant + '?' : "");
-  }
+  const auto meant = nearest(model, names);
+  root.report("model", '"' + printable(model) + "\" is not a model", std::string(expected),
+              meant ? "Did you mean " + *meant + '?' : "");
   return std::nullopt;
 }
 

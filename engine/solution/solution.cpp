@@ -123,17 +123,27 @@ Result<Chosen> choose_model(const Recipe& recipe) {
   }
   auto pitzer = solve_with(recipe, ModelKind::pitzer);
   if (!pitzer) return pitzer.problems();
-  if (pitzer->coverage.valid)
-    return Chosen{*std::move(pitzer), "its parameters cover every interaction that matters here"};
-  auto davies = solve_with(recipe, ModelKind::davies);
-  if (!davies) return davies.problems();
-  const std::string strength = units::significant(davies->equilibrium.ionic_strength) + " mol/kg";
-  if (davies->coverage.valid)
-    return Chosen{*std::move(davies), "Pitzer parameters do not cover this solution, and ionic strength " +
-                                          strength + " is low enough"};
+  const auto in_doubt = [](const Solved& solved) {
+    return units::significant(100 * std::expm1(solved.coverage.u_ln_gamma), 2) + " %";
+  };
+  constexpr double negligible = 0.01;  // of ln gamma
+  if (pitzer->coverage.valid) {
+    std::string reason = "its parameters cover every interaction that matters here";
+    if (pitzer->coverage.u_ln_gamma >= negligible)
+      reason = "what its parameters leave open makes no coefficient that matters more uncertain than " +
+               in_doubt(*pitzer);
+    return Chosen{*std::move(pitzer), std::move(reason)};
+  }
+  auto sit = solve_with(recipe, ModelKind::sit);
+  if (sit && sit->coverage.valid) {
+    std::string reason =
+        "Pitzer parameters do not cover this solution; with complexes and specific interaction coefficients no "
+        "coefficient that matters is more uncertain than " +
+        in_doubt(*sit);
+    return Chosen{*std::move(sit), std::move(reason)};
+  }
   return Chosen{*std::move(pitzer),
-                "its parameters do not cover all of this solution, but the ionic strength by Davies, " +
-                    strength + ", is beyond the range of that model"};
+                "its parameters do not cover all of this solution, but sit does no better"};
 }
 
 /// Dissolved totals of the components, mol per kg of liquid water, and all the water that goes with them.

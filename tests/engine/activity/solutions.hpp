@@ -13,7 +13,8 @@
 namespace bathwright::activity {
 
 inline constexpr units::Celsius room{25};
-inline constexpr ModelKind all_models[] = {ModelKind::davies, ModelKind::debye_huckel, ModelKind::pitzer};
+inline constexpr ModelKind all_models[] = {ModelKind::davies, ModelKind::debye_huckel, ModelKind::sit,
+                                           ModelKind::pitzer};
 
 using Names = std::vector<std::string>;
 using Numbers = std::vector<double>;

@@ -106,7 +106,7 @@ TEST_CASE("Pitzer pairs tabulated against temperature stand in rising order and 
 TEST_CASE("Pitzer mixing: every kind joins species of the charges it is defined for", "[unit]") {
   each(pitzer_mixing(), [](const CsvRow& row) {
     check_set_and_quality(row);
-    check_word(row, "kind", {"theta", "psi", "lambda", "zeta"});
+    check_word(row, "kind", {"theta", "psi", "lambda", "zeta", "mu"});
     check_filled(row, {"i", "j", "t_C", "value"});
     check_range(row, "t_C", 0, 100);
     check_range(row, "value", -0.6, 0.3);
@@ -116,6 +116,7 @@ TEST_CASE("Pitzer mixing: every kind joins species of the charges it is defined 
     if (kind == "theta") CHECK((i * j > 0 && row["i"] != row["j"] && row["k"].empty()));
     if (kind == "psi") CHECK((i * j > 0 && row["i"] != row["j"] && i * k < 0));
     if (kind == "lambda") CHECK((i == 0 && row["k"].empty()));
+    if (kind == "mu") CHECK((i == 0 && row["i"] == row["j"] && row["j"] == row["k"]));
     if (kind == "zeta") CHECK((i == 0 && j > 0 && k < 0));
   });
 }

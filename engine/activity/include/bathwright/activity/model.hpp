@@ -11,7 +11,7 @@
 
 namespace bathwright::activity {
 
-enum class ModelKind { davies, debye_huckel, pitzer };
+enum class ModelKind { davies, debye_huckel, sit, pitzer };
 
 [[nodiscard]] std::string_view name(ModelKind kind);
 
@@ -46,6 +46,10 @@ struct InteractionNote {
     double weight;
   };
   std::vector<Counted> counted{};  ///< above_range: the sum that must not exceed the limit; none: the salt
+  /// Standard uncertainty of ln gamma of each of the solutes that comes of it, per mol/kg of the other (of
+  /// two others: of their product). By the named rules of the model's parameters; 0 where no size can be
+  /// given.
+  double u_ln_gamma = 0;
 };
 
 /// One model, prepared for a fixed list of solutes at one temperature. Immutable: any number of threads may
