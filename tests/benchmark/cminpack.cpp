@@ -40,7 +40,7 @@ class Cminpack : public RootFinder {
     work_.resize(4 * n);
     Watch watch{&equations, tolerance, {}};
     int evaluations = 0, jacobians = 0;
-    constexpr double step_tolerance = 1e-15, trust_factor = 1;
+    constexpr double step_tolerance = 1e-15, trust_factor = 0.3;
     constexpr int given_scale = 2, silent = 0;
     hybrj(evaluate, &watch, static_cast<int>(n), u.data(), f_.data(), J_.data(), static_cast<int>(n),
           step_tolerance, 10 * most_iterations, diagonal_.data(), given_scale, trust_factor, silent,

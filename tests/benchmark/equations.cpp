@@ -31,13 +31,13 @@ Equations::Equations(const speciation::Solver& solver, const speciation::Task& t
   const auto& system = solver.system();
   species_.resize(system.species().size());
   for (std::size_t j = 0; j < species_.size(); ++j) {
-    fill(species_[j], system.species()[j], solver.ln_K_species()[j]);
+    fill(species_[j], system.species()[j], solver.ln_K().species[j]);
     charge_.push_back(system.species()[j].charge);
   }
   for (std::size_t k = 0; k < solids_in_system_; ++k) {
     if (task.solids.empty() || task.solids[k] != SolidRule::may_precipitate || !solver.covers(k)) continue;
     Solid solid;
-    fill(solid, system.solids()[k], solver.ln_K_solids()[k]);
+    fill(solid, system.solids()[k], solver.ln_K().solids[k]);
     solid.index = k;
     solid.limit_mol = std::numeric_limits<double>::infinity();
     for (const Term& term : solid.terms)

@@ -39,11 +39,11 @@ double worst_residual(const speciation::Solver& solver, const speciation::Task& 
   };
   for (std::size_t j = 0; j < system.species().size(); ++j)
     raise(std::log(answer.molality[j]) + ln_gamma[j] -
-          ln_product(system.species()[j], -solver.ln_K_species()[j]));
+          ln_product(system.species()[j], -solver.ln_K().species[j]));
   for (std::size_t k = 0; k < system.solids().size(); ++k) {
     if (task.solids.empty() || task.solids[k] == speciation::SolidRule::report_only || !solver.covers(k))
       continue;
-    const double above = ln_product(system.solids()[k], solver.ln_K_solids()[k]);
+    const double above = ln_product(system.solids()[k], solver.ln_K().solids[k]);
     raise(answer.solid_mol[k] != 0 ? above : std::max(0.0, above));
     raise(std::min(0.0, answer.solid_mol[k]));
   }
