@@ -51,6 +51,16 @@ Equations::Equations(const speciation::Solver& solver, const speciation::Task& t
   balance_.resize(components_ + 1);
 }
 
+void Equations::set_totals(const speciation::Task& task) {
+  total_ = task.component_mol;
+  total_water_mol_ = task.water_kg * water_mol_per_kg;
+}
+
+void Equations::use(const speciation::Constants& ln_K) {
+  for (std::size_t j = 0; j < species_.size(); ++j) species_[j].ln_K = ln_K.species[j];
+  for (Solid& solid : solids_) solid.ln_K = ln_K.solids[solid.index];
+}
+
 void Equations::amounts(const double* u) const {
   for (std::size_t j = 0; j < species_.size(); ++j) {
     double ln_n = species_[j].ln_K + species_[j].water * ln_aw_ - ln_gamma_[j] + u[components_];

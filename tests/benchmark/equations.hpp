@@ -27,6 +27,10 @@ class Equations {
   /// Every component that has a total must have one that is not zero.
   Equations(const speciation::Solver& solver, const speciation::Task& task);
 
+  /// Other totals and water; the solids that may precipitate stay.
+  void set_totals(const speciation::Task& task);
+  void use(const speciation::Constants& ln_K);
+
   [[nodiscard]] std::size_t size() const { return components_ + 1 + present_.size(); }
 
   /// false when a residual is not finite; then nothing in f may be used.
@@ -59,7 +63,7 @@ class Equations {
   };
   struct Solid : Row {
     std::size_t index = 0;  ///< in the system
-    double limit_mol = 0;   ///< the most that can form
+    double limit_mol = 0;   ///< the most that could form at first: the scale of its unknown
   };
   struct Side {
     double left = 0, right = 0;

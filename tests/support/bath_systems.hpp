@@ -42,6 +42,7 @@ struct BathSystem {
   std::string cation;  ///< of the alkali that corrects the pH; its amount follows from the others
   std::string anion;   ///< of the acid that corrects the pH
   Amounts usual;       ///< mol, without H^+ and the cation
+  Amounts addition;    ///< mol: one portion of the salt that is added most, about a fiftieth of the bath's
   std::vector<std::string> solids;  ///< what may precipitate
 
   [[nodiscard]] std::vector<std::string> components() const {
@@ -61,6 +62,7 @@ inline const std::array<BathSystem, 3>& bath_systems() {
        "Na^+",
        "SO4^2-",
        {{"Ni^2+", 1.3}, {"SO4^2-", 1.1}, {"Cl^-", 0.45}, {"H3BO3", 0.65}},
+       {{"Ni^2+", 0.02}, {"SO4^2-", 0.02}},
        {"Ni(OH)2 (freshly precipitated)", "NiSO4.7H2O", "NiCl2.6H2O", "H3BO3"}},
       {"pyrophosphate copper",
        0.45,
@@ -73,6 +75,7 @@ inline const std::array<BathSystem, 3>& bath_systems() {
         {"PO4^3-", 0.2},
         {"CO3^2-", 0.05},
         {"SO4^2-", 0.02}},
+       {{"K^+", 0.08}, {"P2O7^4-", 0.02}},
        {"Cu(OH)2", "Cu4(OH)6SO4 (brochantite)", "CuSO4.5H2O", "Cu2P2O7", "Cu3(PO4)2", "K2SO4", "(NH4)2SO4",
         "KH2PO4"}},
       {"electroless nickel",
@@ -93,6 +96,7 @@ inline const std::array<BathSystem, 3>& bath_systems() {
         {"suc^2-", 0.05},
         {"CH3COO^-", 0.1},
         {"Cl^-", 0.02}},
+       {{"Ni^2+", 0.002}, {"SO4^2-", 0.002}},
        {"Ni(OH)2 (freshly precipitated)", "NiCO3.5.5H2O (hellyerite)", "NiSO4.7H2O", "(NH4)2Ni(SO4)2.6H2O",
         "Fe(OH)3 (amorphous)", "Fe(OH)2", "FeSO4.7H2O (melanterite)", "CaSO4.2H2O (gypsum)",
         "CaCO3 (calcite)", "CaHPO3.H2O (estimate)", "Na2SO4.10H2O (mirabilite)", "NaHCO3",

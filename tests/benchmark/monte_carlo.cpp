@@ -1,0 +1,44 @@
+#include "monte_carlo.hpp"
+
+#include <algorithm>
+#include <chrono>
+#include <optional>
+#include <thread>
+
+#include "judge.hpp"
+
+namespace bathwright::benchmark {
+
+SampledRun run_samples(const NamedMethod& method, const speciation::Solver& solver,
+                       const std::vector<Sample>& samples, std::size_t threads) {
+  std::vector<std::unique_ptr<Method>> methods;
+  for (std::size_t t = 0; t < threads; ++t) methods.push_back(method.make(solver, samples.front().task));
+  std::vector<std::optional<Answer>> answers(samples.size());
+  const auto share_of = [&](std::size_t t) {
+    Method& own = *methods[t];
+    const std::size_t begin = samples.size() * t / threads, end = samples.size() * (t + 1) / threads;
+    for (std::size_t i = begin; i < end; ++i) {
+      own.use(samples[i].ln_K);
+      const bool solved = i == begin ? own.solve(samples[i].task) : own.solve_near_last(samples[i].task);
+      if (solved) answers[i] = own.answer();
+    }
+  };
+  const auto start = std::chrono::steady_clock::now();
+  {
+    std::vector<std::jthread> running;
+    for (std::size_t t = 0; t < threads; ++t) running.emplace_back(share_of, t);
+  }
+  SampledRun result;
+  result.seconds = std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
+  for (std::size_t i = 0; i < samples.size(); ++i) {
+    const double residual =
+        answers[i] ? worst_residual(solver, samples[i].ln_K, samples[i].task, *answers[i]) : 2 * accepted;
+    if (residual <= accepted)
+      result.worst_residual = std::max(result.worst_residual, residual);
+    else
+      ++result.failures;
+  }
+  return result;
+}
+
+}  // namespace bathwright::benchmark

@@ -1,0 +1,25 @@
+// Ten thousand samples of one bath over two threads, as an uncertainty by sampling needs them.
+#pragma once
+
+#include <vector>
+
+#include "method.hpp"
+
+namespace bathwright::benchmark {
+
+struct Sample {
+  speciation::Task task;
+  speciation::Constants ln_K;
+};
+
+struct SampledRun {
+  double seconds = 0;  ///< wall clock, from the start of the threads to the last answer
+  std::size_t failures = 0;
+  double worst_residual = 0;  ///< among the answers that count
+};
+
+/// Every thread has a method of its own and an equal share of the samples, and goes from each to the next.
+SampledRun run_samples(const NamedMethod& method, const speciation::Solver& solver,
+                       const std::vector<Sample>& samples, std::size_t threads);
+
+}  // namespace bathwright::benchmark
