@@ -39,10 +39,6 @@ Equations::Equations(const speciation::Solver& solver, const speciation::Task& t
     Solid solid;
     fill(solid, system.solids()[k], solver.ln_K().solids[k]);
     solid.index = k;
-    solid.limit_mol = std::numeric_limits<double>::infinity();
-    for (const Term& term : solid.terms)
-      if (term.component != proton_)
-        solid.limit_mol = std::min(solid.limit_mol, total_[term.component] / std::abs(term.count));
     solids_.push_back(std::move(solid));
   }
   ln_gamma_.resize(species_.size());
@@ -152,6 +148,12 @@ bool Equations::jacobian(const double* u, double* jacobian, std::size_t row_step
 
 std::vector<double> Equations::cold_start() {
   present_.clear();
+  for (Solid& solid : solids_) {
+    solid.limit_mol = std::numeric_limits<double>::infinity();
+    for (const Term& term : solid.terms)
+      if (term.component != proton_)
+        solid.limit_mol = std::min(solid.limit_mol, total_[term.component] / std::abs(term.count));
+  }
   const double water_kg = total_water_mol_ / water_mol_per_kg;
   std::vector<double> guess(species_.size(), 0.0);
   for (std::size_t i = 0; i < components_; ++i)

@@ -63,7 +63,7 @@ class Equations {
   };
   struct Solid : Row {
     std::size_t index = 0;  ///< in the system
-    double limit_mol = 0;   ///< the most that could form at first: the scale of its unknown
+    double limit_mol = 0;   ///< the most that could form at the cold start: the scale of its unknown
   };
   struct Side {
     double left = 0, right = 0;

@@ -214,7 +214,8 @@ std::string how_the_cases_are_made(std::size_t cases) {
       << "- Monte Carlo: " << samples_per_case * cases << " samples, every amount within a factor "
       << sampled_spread << ", every constant moved by its uncertainty, " << sampling_threads << " threads\n\n"
       << "us: median over the cases a method solved, of each the best of " << runs
-      << " runs, one thread; of a Monte Carlo, wall clock per sample.\n"
+      << " runs, one thread; of a Monte Carlo, processor time of the slower thread "
+         "over all samples.\n"
          "ratio: of the times, to the engine. failures: not converged, refused, or further off than "
       << accepted << " by one judge for all.\nworst residual: by that judge, among the answers that count.\n";
   return how.str();

@@ -13,7 +13,7 @@ struct Sample {
 };
 
 struct SampledRun {
-  double seconds = 0;  ///< wall clock, from the start of the threads to the last answer
+  double seconds = 0;  ///< processor time of the thread that needed most: the wall clock of a quiet machine
   std::size_t failures = 0;
   double worst_residual = 0;  ///< among the answers that count
 };

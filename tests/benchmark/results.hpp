@@ -9,7 +9,8 @@ namespace bathwright::benchmark {
 struct Row {
   std::string system, model, cases_from, method;
   std::size_t components = 0, species = 0, solids = 0;
-  double time_us = 0;  ///< median of the cases it solved (NaN: none); of a Monte Carlo, wall clock per sample
+  double time_us = 0;  ///< median of the cases it solved (NaN: none); of a Monte Carlo, of the slower thread
+                       ///< over all samples
   double ratio = 0;    ///< of the times, to the engine
   std::size_t failures = 0, cases = 0;
   double worst_residual = 0;  ///< among the answers that count

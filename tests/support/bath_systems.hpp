@@ -94,6 +94,7 @@ inline const std::array<BathSystem, 3>& bath_systems() {
         {"cit^3-", 0.1},
         {"lac^-", 0.3},
         {"suc^2-", 0.05},
+        {"mal^2-", 0.05},
         {"CH3COO^-", 0.1},
         {"Cl^-", 0.02}},
        {{"Ni^2+", 0.002}, {"SO4^2-", 0.002}},
