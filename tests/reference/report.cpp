@@ -132,6 +132,11 @@ std::string markdown(const std::vector<Line>& lines) {
   std::stable_sort(outside.begin(), outside.end(), [](const Line* a, const Line* b) {
     return a->error_in_tolerances() > b->error_in_tolerances();
   });
+  const auto silent = std::count_if(outside.begin(), outside.end(), [](const Line* line) {
+    return line->error_in_tolerances() > silent_from;
+  });
+  out << "\nSilent wrong answers, more than " << silent_from
+      << " tolerances outside and yet called valid: " << silent << ".\n";
   out << "\n## Outside the tolerance, worst first\n\n" << head;
   for (const Line* line : outside) write_row(out, *line);
   out << "\n## All rows\n\n" << head;

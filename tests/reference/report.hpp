@@ -48,6 +48,9 @@ Computed compute_solubility(const Figure& figure,
 /// given.
 inline constexpr double dilute_molal = 0.1005;
 
+/// From here on, in tolerances, a value that is outside and called valid is a silent wrong answer.
+inline constexpr double silent_from = 3;
+
 /// Every row of every table with Pitzer; single solutions also with Davies up to dilute_molal.
 std::vector<Line> compare_all();
 
