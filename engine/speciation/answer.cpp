@@ -58,16 +58,15 @@ void read_answer(Workspace& w, const Solver& solver, const Constants& ln_K, cons
   answer.molality.assign(count, 0);
   answer.ln_gamma.assign(count, 0);
   answer.ln_activity.assign(count, -std::numeric_limits<double>::infinity());
-  SpeciesVector m, in_kind;
-  w.ln_molality(m);
+  SpeciesVector m = w.ln_m, in_kind;
   // What a double cannot hold is none of it.
   m = (m.array() < lowest_ln_molality).select(0, m.array().exp());
   w.sum_kinds(m, in_kind);
   for (std::size_t j = 0; j < w.species.size(); ++j) answer.molality[w.species[j]] = m(static_cast<Index>(j));
   // One last look at the coefficients, so that what is printed belongs together to the last digit.
   answer.ln_water_activity = solver.model().evaluate(answer.molality, answer.ln_gamma);
-  for (const std::size_t j : w.species)
-    answer.ln_activity[j] = std::log(answer.molality[j]) + answer.ln_gamma[j];
+  for (std::size_t j = 0; j < w.species.size(); ++j)
+    answer.ln_activity[w.species[j]] = w.ln_m(static_cast<Index>(j)) + answer.ln_gamma[w.species[j]];
   answer.water_kg = w.water_kg;
   answer.ionic_strength = 0;
   double sum = 0;

@@ -21,12 +21,17 @@ Result<Solver> Solver::prepare(std::shared_ptr<const ChemicalSystem> system, act
   solver.system_ = std::move(system);
   solver.model_ = *std::move(model);
   solver.t_ = t;
+  solver.acid_set_ = acid_set;
   const auto ln_K = [&](const SystemSpecies& row) { return row.constant.log10_at(t) * std::numbers::ln10; };
   for (const SystemSpecies& species : solver.system_->species())
     solver.ln_K_.species.push_back(ln_K(species));
   for (const SystemSolid& solid : solver.system_->solids()) solver.ln_K_.solids.push_back(ln_K(solid));
   for (const SystemSpecies& gas : solver.system_->gases()) solver.ln_K_.gases.push_back(ln_K(gas));
   return solver;
+}
+
+Result<Solver> Solver::at_temperature(units::Celsius t) const {
+  return prepare(system_, model_->kind(), t, acid_set_);
 }
 
 bool Solver::covers(std::size_t solid) const {

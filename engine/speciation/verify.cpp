@@ -18,10 +18,13 @@ Residuals verify(const Solver& solver, const Constants& ln_K, const Task& task, 
   std::array<double, activity::max_solutes> ln_gamma, ln_a;
   const std::size_t count = answer.molality.size();
   const double ln_water = solver.model().evaluate(answer.molality, ln_gamma);
-  for (std::size_t j = 0; j < count; ++j) ln_a[j] = std::log(answer.molality[j]) + ln_gamma[j];
+  // A free ion may be less than a double can hold; its activity is then taken at its word.
+  for (std::size_t j = 0; j < count; ++j)
+    ln_a[j] =
+        answer.molality[j] > 0 ? std::log(answer.molality[j]) + ln_gamma[j] : answer.ln_activity[j];
   for (std::size_t j = 0; j < count; ++j) {
     const SystemSpecies& species = system.species()[j];
-    if (answer.molality[j] <= 0) continue;  // a component that is absent, and all that needs it
+    if (!std::isfinite(ln_a[j])) continue;  // a component that is absent, and all that needs it
     double expected = ln_K.species[j] + species.water * ln_water;
     for (std::size_t i = 0; i < components; ++i)
       if (species.made_of[i] != 0) expected += species.made_of[i] * ln_a[i];

@@ -38,6 +38,7 @@ struct Phase {
 struct State {
   Vector x;                ///< ln activity of the basis
   SpeciesVector ln_gamma;  ///< per kind of solute
+  SpeciesVector ln_m;      ///< ln molality per species, as the last coupled Newton met the balances with
   double ln_aw = 0;
   double water_kg = 1;
 };

@@ -79,6 +79,9 @@ class Solver {
   static Result<Solver> prepare(std::shared_ptr<const ChemicalSystem> system, activity::ModelKind model,
                                 units::Celsius t, activity::AcidSet acid_set = activity::AcidSet::sulfate);
 
+  /// The same system, model and sets of parameters at another temperature.
+  [[nodiscard]] Result<Solver> at_temperature(units::Celsius t) const;
+
   /// Converges to: relative mass balance 1e-12, ln mass action 1e-10, ln saturation 1e-8, as verified. Fails,
   /// never with a silent wrong answer, on: a total that is not finite or negative, water not positive
   /// (bad_input); a pH or gas pressure that cannot be held with what was given, a solution that dries up or
@@ -98,6 +101,7 @@ class Solver {
   std::shared_ptr<const ChemicalSystem> system_;
   std::shared_ptr<const activity::ActivityModel> model_;
   units::Celsius t_;
+  activity::AcidSet acid_set_ = activity::AcidSet::sulfate;
   Constants ln_K_;
 };
 
