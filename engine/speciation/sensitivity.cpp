@@ -16,9 +16,9 @@ double at(const std::vector<double>& values, std::size_t i) { return values.empt
 /// A phase whose condition holds: what it is made of, and by how much its amount counts in the balances.
 struct Present {
   enum class Kind : std::uint8_t { solid, gas, pH } kind;
-  std::size_t index;                ///< in the solids or gases of the system
-  std::vector<double> condition;    ///< over the components
-  std::vector<double> in_balance;   ///< over the components, per mol
+  std::size_t index;               ///< in the solids or gases of the system
+  std::vector<double> condition;   ///< over the components
+  std::vector<double> in_balance;  ///< over the components, per mol
   double condition_water, in_water;
 };
 
@@ -329,9 +329,8 @@ Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Eq
   const auto of_constant = [](const auto& rows) {
     return [&rows](std::size_t i) { return rows[i].constant.uncertainty * std::numbers::ln10; };
   };
-  by_each(&Change::ln_K_species, system.species().size(), [&](std::size_t j) {
-    return answer.molality[j] > 0 ? of_constant(system.species())(j) : 0.0;
-  });
+  by_each(&Change::ln_K_species, system.species().size(),
+          [&](std::size_t j) { return answer.molality[j] > 0 ? of_constant(system.species())(j) : 0.0; });
   by_each(&Change::ln_K_solids, system.solids().size(), of_constant(system.solids()));
   by_each(&Change::ln_K_gases, system.gases().size(), of_constant(system.gases()));
   by_each(&Change::component_mol, input.component_mol.size(),
@@ -353,8 +352,7 @@ Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Eq
     auto change = Sensitivity::per_kelvin(solver, answer);
     if (!change) return change.problems();
     Shift shift = sensitivity->respond(*change);
-    for (auto* values :
-         {&shift.ln_molality, &shift.ln_activity, &shift.saturation_index, &shift.ln_gas_bar})
+    for (auto* values : {&shift.ln_molality, &shift.ln_activity, &shift.saturation_index, &shift.ln_gas_bar})
       for (double& v : *values) v *= input.temperature_K;
     shift.ln_water_activity *= input.temperature_K;
     variance.add(shift);

@@ -29,9 +29,9 @@ struct Shift {
 };
 
 /// The linearised equilibrium of one answer: balances, mass action and conditions of the present phases with
-/// d ln gamma / d m of the model, written over all species (nothing of the solver's own reduction), factorised
-/// once. The set of phases is taken as it stands: at a point where a solid is about to appear or to vanish
-/// the derivatives are those of the side the answer is on.
+/// d ln gamma / d m of the model, written over all species (nothing of the solver's own reduction),
+/// factorised once. The set of phases is taken as it stands: at a point where a solid is about to appear or
+/// to vanish the derivatives are those of the side the answer is on.
 class Sensitivity {
  public:
   /// answer: of this task by this solver. Fails (not_converged) where the linear system is singular.

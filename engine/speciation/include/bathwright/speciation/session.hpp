@@ -19,7 +19,8 @@ class Session {
   Outcome solve(const Task& task, Equilibrium& answer);
 
   /// Starts from the last answer, which should be near; where that does not lead to an answer, or another
-  /// set of components or phases is present, as solve(). The result is the same to rounding.
+  /// set of components or phases is present, as solve(). The result is the same to rounding, unless the model
+  /// has left its range and has several equilibria (coverage.hpp calls no such answer valid).
   Outcome solve_near_last(const Task& task, Equilibrium& answer);
 
   /// The constants this session solves with: those of the solver until changed.

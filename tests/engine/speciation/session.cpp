@@ -1,0 +1,135 @@
+// Solving again and again: the same answers, from a warm start too, and no allocation.
+#include <bathwright/speciation/coverage.hpp>
+#include <bathwright/speciation/session.hpp>
+#include <cstdlib>
+#include <new>
+#include <random>
+
+#include "../../support/bath_systems.hpp"
+#include "systems.hpp"
+
+namespace {
+
+bool counting = false;
+std::size_t allocations = 0;
+
+void* counted(std::size_t size) {
+  if (counting) ++allocations;
+  if (void* memory = std::malloc(size == 0 ? 1 : size)) return memory;
+  throw std::bad_alloc();
+}
+
+}  // namespace
+
+void* operator new(std::size_t size) { return counted(size); }
+void* operator new[](std::size_t size) { return counted(size); }
+void operator delete(void* memory) noexcept { std::free(memory); }
+void operator delete[](void* memory) noexcept { std::free(memory); }
+void operator delete(void* memory, std::size_t) noexcept { std::free(memory); }
+void operator delete[](void* memory, std::size_t) noexcept { std::free(memory); }
+
+using namespace bathwright;
+using namespace bathwright::speciation;
+using activity::ModelKind;
+
+namespace {
+
+template <class Visit>
+void each_bath(Visit visit) {
+  for (const BathSystem& bath : bath_systems())
+    for (const ModelKind kind : {ModelKind::davies, ModelKind::pitzer}) {
+      INFO(bath.name << ", " << activity::name(kind));
+      const Solver solver = solver_of(bath.components(), room, kind);
+      visit(bath, solver);
+    }
+}
+
+}  // namespace
+
+TEST_CASE("a session allocates nothing once it is made", "[property]") {
+  each_bath([](const BathSystem& bath, const Solver& solver) {
+    std::mt19937 random(3);
+    std::vector<Task> tasks;
+    for (int n = 0; n < 50; ++n) {
+      tasks.push_back(near_usual(bath, solver.system(), 2, random));
+      tasks.push_back(wild_totals(solver.system(), random));
+    }
+    Session session(solver);
+    Equilibrium answer;
+    REQUIRE(session.solve(tasks[0], answer));  // the answer's own storage
+    REQUIRE(session.solve_near_last(tasks[2], answer));
+    for (const Task& task : tasks) {
+      allocations = 0;
+      counting = true;
+      const Outcome cold = session.solve(task, answer);
+      counting = false;
+      if (cold) CHECK(allocations == 0);
+      allocations = 0;
+      counting = true;
+      const Outcome warm = session.solve_near_last(task, answer);
+      counting = false;
+      if (warm) CHECK(allocations == 0);
+    }
+  });
+}
+
+TEST_CASE("a warm start ends where a cold one does", "[property]") {
+  each_bath([](const BathSystem& bath, const Solver& solver) {
+    std::mt19937 random(11);
+    std::uniform_real_distribution<double> factor(0.97, 1.03);
+    Session warm(solver), cold(solver);
+    Equilibrium along, afresh;
+    Task task = near_usual(bath, solver.system(), 1, random);
+    for (int step = 0; step < 60; ++step) {
+      for (std::size_t i = 1; i < task.component_mol.size(); ++i) task.component_mol[i] *= factor(random);
+      if (step % 20 == 10) {  // far away, and what is present changes
+        task = near_usual(bath, solver.system(), 2, random);
+        task.component_mol.back() = 0;
+      }
+      task.component_mol[0] = neutral_protons(solver.system(), task.component_mol) + bath.net_protons;
+      INFO("step " << step);
+      REQUIRE(warm.solve_near_last(task, along));
+      REQUIRE(cold.solve(task, afresh));
+      if (along.pH() != Approx(afresh.pH()).margin(1e-6).epsilon(0)) {
+        // Where a model has left its range it may have several equilibria; neither is then called valid.
+        CHECK_FALSE(coverage(solver, along).valid);
+        CHECK_FALSE(coverage(solver, afresh).valid);
+        continue;
+      }
+      for (std::size_t j = 0; j < along.molality.size(); ++j)
+        CHECK(along.molality[j] == Approx(afresh.molality[j]).margin(1e-250).epsilon(1e-9));
+      for (std::size_t k = 0; k < along.solid_mol.size(); ++k)
+        CHECK(along.solid_mol[k] == Approx(afresh.solid_mol[k]).margin(1e-9).epsilon(1e-9));
+    }
+  });
+}
+
+TEST_CASE("a session goes on after a task that cannot be solved", "[failure]") {
+  const Solver solver = solver_of({"Na^+", "Cl^-"});
+  Session session(solver);
+  Equilibrium answer;
+  const Task good = task_of(solver.system(), {{"Na^+", 1}, {"Cl^-", 1}});
+  REQUIRE(session.solve(good, answer));
+  const double pH = answer.pH();
+  Task bad = good;
+  bad.water_kg = -1;
+  CHECK_FALSE(session.solve_near_last(bad, answer));
+  bad = task_of(solver.system(), {{"Na^+", 1e6}, {"Cl^-", 1e6}});
+  (void)session.solve(bad, answer);
+  REQUIRE(session.solve_near_last(good, answer));
+  CHECK(answer.pH() == Approx(pH).margin(1e-9).epsilon(0));
+}
+
+TEST_CASE("a session solves with its own constants", "[unit]") {
+  const Solver solver = solver_of({"CH3COO^-", "Na^+"}, room, ModelKind::davies);
+  const Task task = task_of(solver.system(), {{"CH3COO^-", 0.1}, {"Na^+", 0.05}});
+  Session session(solver);
+  Equilibrium usual, stronger;
+  REQUIRE(session.solve(task, usual));
+  const auto acid = solver.system().species_index("CH3COOH");
+  REQUIRE(acid);
+  session.ln_K().species[*acid] += std::log(10.0);
+  REQUIRE(session.solve_near_last(task, stronger));
+  CHECK(stronger.pH() == Approx(usual.pH() + 1).margin(0.01).epsilon(0));
+  CHECK(solved(solver, task).pH() == Approx(usual.pH()).margin(1e-12).epsilon(0));
+}
