@@ -1,4 +1,5 @@
 // What the solver refuses, and in which words.
+#include <bathwright/speciation/session.hpp>
 #include <limits>
 
 #include "systems.hpp"
@@ -93,6 +94,53 @@ TEST_CASE("a pH or a pressure that cannot be held is refused or met, never faked
     const auto answer = solver.solve(task);
     if (answer) CHECK(answer->pH() == Approx(pH).margin(1e-8).epsilon(0));
     if (answer) CHECK(answer->residuals.mass_balance < 1e-12);
+  }
+}
+
+TEST_CASE("more components or species than fit are refused with the limit", "[failure]") {
+  const Equilibria& equilibria = equilibria_for(activity::ModelKind::pitzer);
+  Names names;
+  for (const std::string& name : equilibria.basis())
+    if (name != "H^+") names.push_back(name);
+  REQUIRE(names.size() >= max_components);
+  names.resize(max_components);  // and H^+
+  const auto components = ChemicalSystem::make(equilibria, names);
+  REQUIRE_FALSE(components);
+  CHECK(components.problems()[0].kind == Fault::out_of_range);
+  CHECK(components.problems()[0].what == "49 components");
+  CHECK(components.problems()[0].expected == "at most 48");
+  names.pop_back();
+  const auto species = ChemicalSystem::make(equilibria, names);
+  REQUIRE_FALSE(species);
+  CHECK(species.problems()[0].what.find("dissolved species") != std::string::npos);
+  CHECK(species.problems()[0].expected == "at most 256");
+}
+
+TEST_CASE("a session is as good as new after input it refused", "[failure]") {
+  const Solver solver = brine();
+  Session session(solver);
+  Equilibrium answer;
+  const Task task = task_of(solver.system(), {{"Na^+", 1}, {"Cl^-", 1.2}});
+  REQUIRE(session.solve(task, answer));
+  const double pH = answer.pH();
+  for (const double wrong : {not_a_number, infinite, -1.0}) {
+    Task bad = task;
+    bad.component_mol[1] = wrong;
+    CHECK_FALSE(session.solve_near_last(bad, answer));
+    CHECK_FALSE(session.solve(bad, answer));
+    REQUIRE(session.solve_near_last(task, answer));
+    CHECK(answer.pH() == Approx(pH).margin(1e-12).epsilon(0));
+  }
+}
+
+TEST_CASE("a droplet and a sea are solved alike", "[property]") {
+  const Solver solver = brine();
+  const double pH = solved(solver, task_of(solver.system(), {{"Na^+", 1}, {"Cl^-", 1.2}})).pH();
+  for (const double kg : {1e-12, 1e-3, 1e6, 1e12}) {
+    INFO(kg << " kg of water");
+    Task task = task_of(solver.system(), {{"Na^+", kg}, {"Cl^-", 1.2 * kg}});
+    task.water_kg = kg;
+    CHECK(solved(solver, task).pH() == Approx(pH).margin(1e-9).epsilon(0));
   }
 }
 
