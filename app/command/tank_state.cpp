@@ -1,3 +1,5 @@
+#include <bathwright/units/show.hpp>
+
 #include "tank_state.hpp"
 
 #include <bathwright/shopfiles/readings_file.hpp>
@@ -20,11 +22,18 @@ Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
 
 /// Whether two documents of `analyse` hold the same figures, whatever is said about them.
 bool same_figures(const Json& a, const Json& b) {
-  const auto figures = [](const Json& document) {
+  // A level that is 0 because the book says so is one more equation than one that is taken as 0: the last
+  // digits of the others may differ.
+  constexpr int digits = 10;
+  const auto rounded = [](const Json& figure) {
+    return figure.is_number() ? Json(units::significant(figure.get<double>(), digits)) : figure;
+  };
+  const auto figures = [&](const Json& document) {
     Json kept;
-    for (const char* key : {"volume_L", "temperature_C", "pH"}) kept[key] = document.value(key, Json());
+    for (const char* key : {"volume_L", "temperature_C", "pH"})
+      kept[key] = rounded(document.value(key, Json()));
     for (const Json& result : document.at("results"))
-      kept["results"].push_back({result.value("quantity", Json()), result.value("value", Json())});
+      kept["results"].push_back({result.value("quantity", Json()), rounded(result.value("value", Json()))});
     return kept;
   };
   return figures(a) == figures(b);

@@ -7,10 +7,20 @@ namespace bathwright::sheets {
 namespace {
 
 constexpr double trace_molality = 1e-9;
+constexpr double trace_pressure_atm = 1e-8;  // a hundredth of a part per million of the air
 constexpr double far_below_saturation = -3;
 
+/// "± 0.05" with the digits a standard uncertainty deserves; empty where there is none.
+std::string give_or_take(const std::optional<double>& u) {
+  if (!u) return {};
+  return "± " + (*u < 0.005 ? std::string("0.00") : fixed(*u, 2));
+}
+
 std::string solid_state(const solution::SolidFound& solid) {
-  if (solid.dissolved_mol > 0) return figure(solid.dissolved_mol) + " mol/kg dissolves";
+  if (solid.dissolved_mol > 0)
+    return figure(solid.dissolved_mol) +
+           (solid.u_dissolved_mol ? " ± " + units::significant(*solid.u_dissolved_mol, 1) : "") +
+           " mol/kg dissolves";
   if (solid.precipitated_mol > 0) return figure(solid.precipitated_mol) + " mol/kg precipitates";
   if (!solid.covers_temperature) return "no data at this temperature";
   if (solid.saturation_index > 0) return solid.slow ? "supersaturated, forms slowly" : "supersaturated";
@@ -22,7 +32,8 @@ void species(Lines& lines, const solution::Solution& s) {
                {"mol/kg", Align::number},
                {"mol/L", Align::number},
                {"gamma", Align::number},
-               {"log10 a", Align::number}});
+               {"log10 a", Align::number},
+               {""}});
   std::size_t traces = 0;
   for (const auto& line : s.species) {
     if (line.molality < trace_molality && line.name != "H^+") {
@@ -30,7 +41,7 @@ void species(Lines& lines, const solution::Solution& s) {
       continue;
     }
     table.add({pretty(line.name), figure(line.molality), figure(line.molarity), figure(line.gamma),
-               fixed(line.log10_activity, 3)});
+               fixed(line.log10_activity, 3), give_or_take(line.u_log10_activity)});
   }
   heading(lines, "In solution");
   append(lines, table.lines());
@@ -39,10 +50,11 @@ void species(Lines& lines, const solution::Solution& s) {
 }
 
 void solids(Lines& lines, const solution::Solution& s) {
-  Table table({{"solid"}, {"log10(Q/K)", Align::number}, {"state"}});
+  Table table({{"solid"}, {"log10(Q/K)", Align::number}, {""}, {"state"}});
   for (const auto& solid : s.solids)
     if (solid.saturation_index > far_below_saturation || solid.in_excess)
-      table.add({pretty(solid.name), fixed(solid.saturation_index, 2), solid_state(solid)});
+      table.add({pretty(solid.name), fixed(solid.saturation_index, 2), give_or_take(solid.u_saturation_index),
+                 solid_state(solid)});
   if (table.empty()) return;
   heading(lines, "Solids within three decades of saturation");
   append(lines, table.lines());
@@ -55,11 +67,13 @@ void small_tables(Lines& lines, const solution::Solution& s) {
     heading(lines, "Mean activity");
     append(lines, table.lines());
   }
-  if (!s.gases.empty()) {
-    Table table({{"gas"}, {"partial pressure atm", Align::number}});
-    for (const auto& gas : s.gases) table.add({pretty(gas.name), figure(gas.partial_pressure_atm)});
+  Table gases({{"gas"}, {"partial pressure atm", Align::number}});
+  for (const auto& gas : s.gases)
+    if (gas.partial_pressure_atm > trace_pressure_atm)
+      gases.add({pretty(gas.name), figure(gas.partial_pressure_atm)});
+  if (!gases.empty()) {
     heading(lines, "Gases over it");
-    append(lines, table.lines());
+    append(lines, gases.lines());
   }
 }
 
@@ -70,7 +84,7 @@ Lines solution_sheet(const solution::Solution& s, std::string_view name) {
   title(lines, name, units::show(s.temperature));
   lines.emplace_back();
   Table facts({{""}, {"", Align::number}, {""}});
-  facts.add({"pH", fixed(s.pH, 3), ""});
+  facts.add({"pH", fixed(s.pH, 3), give_or_take(s.u_pH)});
   facts.add({"ionic strength", figure(s.ionic_strength), "mol/kg"});
   facts.add({"water activity", fixed(s.water_activity, 4), ""});
   facts.add({"osmotic coefficient", fixed(s.osmotic_coefficient, 4), ""});
@@ -82,6 +96,10 @@ Lines solution_sheet(const solution::Solution& s, std::string_view name) {
   if (s.pH_held_with)
     say(lines, "pH is held by " + figure(s.pH_held_with->proton_mol) + " mol/kg H⁺ with " +
                    pretty(s.pH_held_with->counter_ion) + " as counter-ion.");
+  if (s.u_pH)
+    say(lines,
+        "±: one standard uncertainty, of the constants and of interactions that are missing or estimated; the "
+        "amounts count as exact.");
   species(lines, s);
   solids(lines, s);
   small_tables(lines, s);

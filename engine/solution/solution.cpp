@@ -2,6 +2,7 @@
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/solution/solution.hpp>
 #include <bathwright/speciation/coverage.hpp>
+#include <bathwright/speciation/sensitivity.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
 #include <numbers>
@@ -20,6 +21,7 @@ using speciation::Equilibrium;
 using speciation::SolidRule;
 using speciation::Solver;
 using speciation::Task;
+using speciation::Uncertainty;
 
 constexpr double bar_per_atm = 1.01325;  // exact, by definition of the atmosphere
 
@@ -164,18 +166,22 @@ Dissolved dissolved(const Solved& solved) {
   return d;
 }
 
-void list_species(const Solved& solved, double litres_per_kg_water, Solution& out) {
+std::optional<double> in_log10(double ln) { return ln / std::numbers::ln10; }
+
+void list_species(const Solved& solved, const std::optional<Uncertainty>& u, double litres_per_kg_water,
+                  Solution& out) {
   const auto& species = solved.solver.system().species();
   const Equilibrium& e = solved.equilibrium;
   for (std::size_t j = 0; j < species.size(); ++j)
     if (e.molality[j] > 0)
       out.species.push_back({species[j].name, e.molality[j], e.molality[j] / litres_per_kg_water,
-                             std::exp(e.ln_gamma[j]), e.ln_activity[j] / std::numbers::ln10});
+                             std::exp(e.ln_gamma[j]), e.ln_activity[j] / std::numbers::ln10,
+                             u ? in_log10(u->ln_activity[j]) : std::nullopt});
   std::stable_sort(out.species.begin(), out.species.end(),
                    [](const auto& a, const auto& b) { return a.molality > b.molality; });
 }
 
-void list_solids(const Solved& solved, Solution& out) {
+void list_solids(const Solved& solved, const std::optional<Uncertainty>& u, Solution& out) {
   const auto& solids = solved.solver.system().solids();
   const Equilibrium& e = solved.equilibrium;
   for (std::size_t k = 0; k < solids.size(); ++k) {
@@ -184,6 +190,10 @@ void list_solids(const Solved& solved, Solution& out) {
     const bool in_excess = solved.task.solids[k] == SolidRule::in_excess;
     out.solids.push_back({solids[k].name, solids[k].formula, e.saturation_index[k], std::max(formed, 0.0),
                           std::max(-formed, 0.0), in_excess, solids[k].slow, solved.solver.covers(k)});
+    if (u) {
+      out.solids.back().u_saturation_index = u->saturation_index[k];
+      if (in_excess) out.solids.back().u_dissolved_mol = u->solid_mol[k] / e.water_kg;
+    }
     if (solids[k].min_C == solids[k].max_C && formed != 0 && solids[k].min_C != solved.solver.temperature().v)
       out.warnings.push_back(solids[k].name + ": its constant is known at " +
                              units::significant(solids[k].min_C) + " degC only");
@@ -272,8 +282,12 @@ Result<Solution> solve(const Recipe& recipe) {
        density->range_warnings(content.component_mol, content.water_kg, recipe.temperature))
     out.warnings.push_back(std::move(doubt));
 
-  list_species(solved, density->volume_L(content.component_mol, content.water_kg, recipe.temperature), out);
-  list_solids(solved, out);
+  std::optional<Uncertainty> u;
+  if (auto found = speciation::uncertainty(solved.solver, solved.task, e)) u = *std::move(found);
+  if (u) out.u_pH = u->pH;
+  list_species(solved, u, density->volume_L(content.component_mol, content.water_kg, recipe.temperature),
+               out);
+  list_solids(solved, u, out);
   list_gases(solved, out);
   const IonTotals totals = stoichiometric(recipe, solved);
   list_mean_activities(recipe, solved, totals, out);

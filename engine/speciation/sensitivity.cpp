@@ -263,6 +263,7 @@ class Variance {
     sum_.ln_molality.assign(system.species().size(), 0);
     sum_.ln_activity = sum_.ln_molality;
     sum_.saturation_index.assign(system.solids().size(), 0);
+    sum_.solid_mol = sum_.saturation_index;
     sum_.ln_gas_bar.assign(system.gases().size(), 0);
   }
   void add(const Shift& shift) {
@@ -270,11 +271,13 @@ class Variance {
     square(sum_.ln_water_activity, shift.ln_water_activity);
     add(sum_.ln_molality, shift.ln_molality);
     add(sum_.ln_activity, shift.ln_activity);
+    add(sum_.solid_mol, shift.solid_mol);
     add(sum_.saturation_index, shift.saturation_index);
     add(sum_.ln_gas_bar, shift.ln_gas_bar);
   }
   [[nodiscard]] Uncertainty root() {
-    for (auto* values : {&sum_.ln_molality, &sum_.ln_activity, &sum_.saturation_index, &sum_.ln_gas_bar})
+    for (auto* values :
+         {&sum_.ln_molality, &sum_.ln_activity, &sum_.solid_mol, &sum_.saturation_index, &sum_.ln_gas_bar})
       for (double& v : *values) v = std::sqrt(v);
     sum_.pH = std::sqrt(sum_.pH);
     sum_.ln_water_activity = std::sqrt(sum_.ln_water_activity);

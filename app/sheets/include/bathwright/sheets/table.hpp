@@ -3,6 +3,7 @@
 #pragma once
 
 #include <bathwright/sheets/text.hpp>
+#include <cassert>
 
 namespace bathwright::sheets {
 
@@ -18,7 +19,10 @@ class Table {
   explicit Table(std::vector<Column> columns) : columns_(std::move(columns)) {}
 
   /// One cell per column; "" leaves it blank.
-  void add(std::vector<std::string> cells) { rows_.push_back(std::move(cells)); }
+  void add(std::vector<std::string> cells) {
+    assert(cells.size() == columns_.size());
+    rows_.push_back(std::move(cells));
+  }
   [[nodiscard]] bool empty() const { return rows_.empty(); }
 
   /// Indented by two; wrapped in the last column where the page is too narrow.

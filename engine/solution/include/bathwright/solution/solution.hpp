@@ -14,6 +14,7 @@ struct SpeciesFound {
   double molarity = 0;  ///< mol per litre of solution
   double gamma = 1;     ///< molality scale
   double log10_activity = 0;
+  std::optional<double> u_log10_activity{};  ///< see Solution::u_pH
 };
 
 struct SolidFound {
@@ -24,6 +25,7 @@ struct SolidFound {
   bool in_excess = false;
   bool slow = false;               ///< forms too slowly to count on
   bool covers_temperature = true;  ///< whether its constant is meant for this temperature
+  std::optional<double> u_saturation_index{}, u_dissolved_mol{};  ///< see Solution::u_pH
 };
 
 struct GasFound {
@@ -42,6 +44,10 @@ struct Solution {
   activity::ModelKind model = activity::ModelKind::pitzer;
   std::string model_reason;
   double pH = 7;
+  /// Standard uncertainties, one sigma, of the constants and of the activity coefficients as far as they are
+  /// missing or estimated; the amounts count as exact (speciation/sensitivity.hpp). Nothing where the answer
+  /// has no derivatives.
+  std::optional<double> u_pH;
   double ionic_strength = 0;  ///< mol/kg, over the true ions
   double water_activity = 1;
   /// -ln a(water) / (0.0180153 * sum of the stoichiometric molalities); 1 for pure water.

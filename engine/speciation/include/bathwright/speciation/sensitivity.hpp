@@ -65,8 +65,8 @@ struct InputUncertainty {
 struct Uncertainty {
   double pH = 0, ln_water_activity = 0;
   std::vector<double> ln_molality, ln_activity;  ///< per species
-  std::vector<double> saturation_index;          ///< per solid, log10
-  std::vector<double> ln_gas_bar;                ///< per gas
+  std::vector<double> solid_mol, saturation_index;  ///< per solid; saturation_index log10
+  std::vector<double> ln_gas_bar;                   ///< per gas
 };
 
 /// Fails as Sensitivity::at.
