@@ -1,9 +1,8 @@
-#include <bathwright/units/show.hpp>
-
 #include "tank_state.hpp"
 
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
+#include <bathwright/units/show.hpp>
 
 #include "view_json.hpp"
 
