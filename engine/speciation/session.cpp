@@ -43,7 +43,7 @@ void guess_coefficients(Workspace& w) {
 void balance_water(Workspace& w) {
   SpeciesVector m;
   w.molality(m);
-  double bound = w.water.dot(m) * w.water_kg;
+  double bound = w.bound_water(m) * w.water_kg;
   for (const Phase& phase : w.phases)
     if (phase.active) bound += phase.supply_water * phase.mol;
   const double liquid = (w.total_water - bound) / water_mol_per_kg;

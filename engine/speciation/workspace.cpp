@@ -55,15 +55,19 @@ Workspace::Workspace(const Solver& solver) : solver_(&solver), model_(&solver.mo
   was_present_.resize(all);
   rules_.reserve(solids);
   held_gases_.reserve(gases);
-  first_.reserve(count + 1);
-  entries_.reserve(count * (all + 1));
-  first_holder_.reserve(all + 1);
-  holders_.reserve(count * all);
+  for (Form* form : {&form_, &original_}) {
+    form->first.reserve(count + 1);
+    form->entries.reserve(count * (all + 1));
+    form->first_holder.reserve(all + 1);
+    form->holders.reserve(count * all);
+  }
+  original_phases_.reserve(solids + gases + 1);
   members_.reserve(count + solids);
 }
 
 void Workspace::load(const Task& task, const Constants& constants) {
-  if (was_present_[0] && !rebased_ && same_problem(task)) {
+  if (was_present_[0] && same_problem(task)) {
+    if (rebased_) return_to_components();
     for (Phase& phase : phases) {
       phase.active = phase.kind != Phase::Kind::precipitate;
       phase.mol = 0;
@@ -134,18 +138,16 @@ void Workspace::compile(const Task& task) {
       species.push_back(j);
       kind.push_back(model_->kind_of()[j]);
     }
-  rebased_ = false;
-  inverse_.setIdentity(rows, rows);
-  members_.clear();
-  for (Index i = 0; i < rows; ++i) members_.push_back({false, static_cast<std::size_t>(i)});
-  A.resize(rows, static_cast<Index>(species.size()));
-  water.resize(A.cols());
-  ln_K.resize(A.cols());
-  charge.resize(A.cols());
-  for (Index j = 0; j < A.cols(); ++j) {
+  original_kept_ = false;
+  over_components(rows);
+  form_.A.resize(rows, static_cast<Index>(species.size()));
+  form_.water.resize(form_.A.cols());
+  ln_K.resize(form_.A.cols());
+  charge.resize(form_.A.cols());
+  for (Index j = 0; j < form_.A.cols(); ++j) {
     const SystemSpecies& row = system.species()[species[static_cast<std::size_t>(j)]];
-    A.col(j) = dense(row.made_of);
-    water(j) = row.water;
+    form_.A.col(j) = dense(row.made_of);
+    form_.water(j) = row.water;
     charge(j) = row.charge;
   }
   list_entries();
@@ -173,6 +175,20 @@ void Workspace::compile(const Task& task) {
     supply(row_of_[task.pH->counter_ion]) = -1.0 / z;
     phases.push_back({Phase::Kind::ph, 0, condition, supply, 0, 0, 0, true, 0});
   }
+}
+
+/// The components are the basis.
+void Workspace::over_components(Index rows) {
+  rebased_ = false;
+  inverse_.setIdentity(rows, rows);
+  members_.clear();
+  for (Index i = 0; i < rows; ++i) members_.push_back({false, static_cast<std::size_t>(i)});
+}
+
+void Workspace::return_to_components() {
+  form_ = original_;
+  for (std::size_t k = 0; k < phases.size(); ++k) phases[k] = original_phases_[k];
+  over_components(components());
 }
 
 void Workspace::fill(const Task& task, const Constants& constants) {
@@ -205,32 +221,33 @@ void Workspace::fill(const Task& task, const Constants& constants) {
   }
   total = Vector(inverse_.lazyProduct(total));
   total_water -= total.dot(h);
-  for (Index j = 0; j < count(); ++j) ln_K(j) -= A.col(j).dot(K);
+  for (Index j = 0; j < count(); ++j) ln_K(j) -= form_.A.col(j).dot(K);
   for (Phase& phase : phases) phase.ln_K += phase.condition.dot(K);
 }
 
 void Workspace::list_entries() {
-  entries_.clear();
-  first_.clear();
+  form_.entries.clear();
+  form_.first.clear();
   for (Index j = 0; j < count(); ++j) {
-    first_.push_back(entries_.size());
+    form_.first.push_back(form_.entries.size());
     for (Index i = 0; i < components(); ++i)
-      if (A(i, j) != 0) entries_.push_back({static_cast<std::uint16_t>(i), A(i, j)});
-    if (water(j) != 0) entries_.push_back({static_cast<std::uint16_t>(components()), water(j)});
+      if (form_.A(i, j) != 0) form_.entries.push_back({static_cast<std::uint16_t>(i), form_.A(i, j)});
+    if (form_.water(j) != 0)
+      form_.entries.push_back({static_cast<std::uint16_t>(components()), form_.water(j)});
   }
-  first_.push_back(entries_.size());
+  form_.first.push_back(form_.entries.size());
   // The same entries row by row: count, then place.
   const auto rows = static_cast<std::size_t>(components());
-  first_holder_.assign(rows + 1, 0);
-  for (const Entry& entry : entries_)
-    if (entry.row < rows) ++first_holder_[entry.row + 1u];
-  for (std::size_t i = 0; i < rows; ++i) first_holder_[i + 1] += first_holder_[i];
-  holders_.resize(first_holder_[rows]);
+  form_.first_holder.assign(rows + 1, 0);
+  for (const Entry& entry : form_.entries)
+    if (entry.row < rows) ++form_.first_holder[entry.row + 1u];
+  for (std::size_t i = 0; i < rows; ++i) form_.first_holder[i + 1] += form_.first_holder[i];
+  form_.holders.resize(form_.first_holder[rows]);
   std::array<std::size_t, most_rows> next{};
-  std::copy_n(first_holder_.begin(), rows, next.begin());
+  std::copy_n(form_.first_holder.begin(), rows, next.begin());
   for (Index j = 0; j < count(); ++j)
     for (const Entry* e = begin(j); e != end(j); ++e)
-      if (e->row < rows) holders_[next[e->row]++] = {j, e->value};
+      if (e->row < rows) form_.holders[next[e->row]++] = {j, e->value};
 }
 
 void Workspace::ln_molality(SpeciesVector& result) const {
@@ -258,24 +275,24 @@ void Workspace::sum_kinds(const SpeciesVector& molality, SpeciesVector& in_kind)
 bool Workspace::rebase(const SpeciesVector& m) {
   // A component is scarce when its own species holds next to nothing of it: its balance then says nothing
   // about it. Two rounds a component are ample: a swap may make another one scarce.
-  bool swapped = false;
+  bool exchanged = false;
   for (Index round = 0; round < 2 * components(); ++round) {
     const Index scarce = scarce_component(m);
     if (scarce < 0) break;
     const BasisMember member = most_abundant_holder(scarce, m);
     if (member == members_[static_cast<std::size_t>(scarce)]) break;
     exchange(scarce, member);
-    swapped = true;
+    list_entries();
+    exchanged = true;
   }
-  if (swapped) list_entries();
-  return swapped;
+  return exchanged;
 }
 
 Index Workspace::scarce_component(const SpeciesVector& m) const {
   constexpr double scarce_fraction = 1e-6;
   Vector throughput = total.cwiseAbs();
-  for (Index j = 0; j < count(); ++j)
-    for (Index i = 0; i < components(); ++i) throughput(i) += std::abs(A(i, j)) * m(j) * water_kg;
+  for (Index i = 0; i < components(); ++i)
+    for (const auto& [j, count] : holders(i)) throughput(i) += std::abs(count) * m(j) * water_kg;
   for (Index i = 0; i < components(); ++i)
     if (std::exp(std::min(x(i), 50.0)) * water_kg < scarce_fraction * throughput(i)) return i;
   return -1;
@@ -287,7 +304,7 @@ Workspace::BasisMember Workspace::most_abundant_holder(Index component, const Sp
   BasisMember most = members_[static_cast<std::size_t>(component)];
   double largest = 0;
   for (Index j = 0; j < count(); ++j)
-    if (std::abs(A(component, j)) > part_of_it && m(j) * water_kg > largest) {
+    if (std::abs(form_.A(component, j)) > part_of_it && m(j) * water_kg > largest) {
       largest = m(j) * water_kg;
       most = {false, static_cast<std::size_t>(j)};
     }
@@ -301,10 +318,15 @@ Workspace::BasisMember Workspace::most_abundant_holder(Index component, const Sp
 }
 
 void Workspace::exchange(Index i, BasisMember member) {
+  if (!original_kept_) {
+    original_ = form_;
+    original_phases_ = phases;
+    original_kept_ = true;
+  }
   const auto row = static_cast<Index>(member.index);
-  const Vector made_of = member.is_phase ? phases[member.index].condition : Vector(A.col(row));
+  const Vector made_of = member.is_phase ? phases[member.index].condition : Vector(form_.A.col(row));
   const double K = member.is_phase ? -phases[member.index].ln_K : ln_K(row);
-  const double h = member.is_phase ? phases[member.index].water : water(row);
+  const double h = member.is_phase ? phases[member.index].water : form_.water(row);
   x(i) = K + h * ln_aw + made_of.dot(x);
   // Over the new basis: c_i / d_i of the new member, the rest of c less what that brings.
   const auto rewrite = [&](auto&& column) {
@@ -315,10 +337,10 @@ void Workspace::exchange(Index i, BasisMember member) {
     return share;
   };
   for (Index j = 0; j < count(); ++j)
-    if (A(i, j) != 0) {
-      const double share = rewrite(A.col(j));
+    if (form_.A(i, j) != 0) {
+      const double share = rewrite(form_.A.col(j));
       ln_K(j) -= share * K;
-      water(j) -= share * h;
+      form_.water(j) -= share * h;
     }
   for (Phase& phase : phases) {
     const double share = rewrite(phase.condition), supplied = rewrite(phase.supply);

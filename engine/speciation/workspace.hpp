@@ -53,8 +53,8 @@ class Workspace : public State {
   /// nothing changed, when the task differs in what is present or held.
   bool reload(const Task& task, const Constants& ln_K);
 
-  [[nodiscard]] Index components() const { return A.rows(); }
-  [[nodiscard]] Index count() const { return A.cols(); }
+  [[nodiscard]] Index components() const { return form_.A.rows(); }
+  [[nodiscard]] Index count() const { return form_.A.cols(); }
   [[nodiscard]] std::size_t kinds() const { return model_->kinds(); }
   [[nodiscard]] const activity::ActivityModel& model() const { return *model_; }
 
@@ -70,8 +70,6 @@ class Workspace : public State {
   /// whether anything changed.
   bool rebase(const SpeciesVector& molality);
 
-  Stoichiometry A;         ///< components x species
-  SpeciesVector water;     ///< H2O per species
   SpeciesVector ln_K;      ///< per species
   SpeciesVector charge;    ///< per species
   Vector total;            ///< per component, mol
@@ -87,10 +85,10 @@ class Workspace : public State {
     double value;
   };
   [[nodiscard]] const Entry* begin(Index j) const {
-    return entries_.data() + first_[static_cast<std::size_t>(j)];
+    return form_.entries.data() + form_.first[static_cast<std::size_t>(j)];
   }
   [[nodiscard]] const Entry* end(Index j) const {
-    return begin(j) + (first_[static_cast<std::size_t>(j) + 1] - first_[static_cast<std::size_t>(j)]);
+    return form_.entries.data() + form_.first[static_cast<std::size_t>(j) + 1];
   }
 
   /// The species that hold component i, and how many of it each.
@@ -100,13 +98,26 @@ class Workspace : public State {
   };
   [[nodiscard]] std::span<const Holder> holders(Index i) const {
     const auto at = static_cast<std::size_t>(i);
-    return {holders_.data() + first_holder_[at], first_holder_[at + 1] - first_holder_[at]};
+    return {form_.holders.data() + form_.first_holder[at],
+            form_.first_holder[at + 1] - form_.first_holder[at]};
   }
 
   /// Room for the methods, aligned rows: see their use in coupled_newton.cpp and convex_dual.cpp.
   std::vector<double> kind_table, by_kind, derivative, elimination, curvature;
 
+  /// H2O bound in the species of a composition, mol per kg of water.
+  [[nodiscard]] double bound_water(const SpeciesVector& molality) const { return form_.water.dot(molality); }
+
  private:
+  /// What everything is made of over the present basis, densely and by its entries.
+  struct Form {
+    Stoichiometry A;      ///< components x species
+    SpeciesVector water;  ///< H2O per species
+    std::vector<std::size_t> first,
+        first_holder;  ///< per species: its first entry; per component: its first holder
+    std::vector<Entry> entries;
+    std::vector<Holder> holders;
+  };
   struct BasisMember {
     bool is_phase;
     std::size_t index;  ///< in `species` or `phases`
@@ -115,6 +126,8 @@ class Workspace : public State {
   void compile(const Task& task);
   void fill(const Task& task, const Constants& ln_K);
   void list_entries();
+  void over_components(Index rows);
+  void return_to_components();
   [[nodiscard]] Index scarce_component(const SpeciesVector& molality) const;
   [[nodiscard]] BasisMember most_abundant_holder(Index component, const SpeciesVector& molality) const;
   void exchange(Index component, BasisMember member);
@@ -127,11 +140,11 @@ class Workspace : public State {
   std::vector<SolidRule> rules_;
   std::vector<std::size_t> held_gases_;
   std::optional<std::size_t> counter_ion_;
-  std::vector<std::size_t> first_;  ///< per species: its first entry
-  std::vector<Entry> entries_;
-  std::vector<std::size_t> first_holder_;  ///< per component: its first holder
-  std::vector<Holder> holders_;
+  Form form_;
   bool rebased_ = false;
+  bool original_kept_ = false;
+  Form original_;  ///< over the components, kept from the first change of basis on
+  std::vector<Phase> original_phases_;
   std::vector<BasisMember> members_;
   Table inverse_;  ///< basis over components -> basis over members
 };
