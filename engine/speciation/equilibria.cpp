@@ -9,11 +9,10 @@
 #include <optional>
 #include <set>
 
+#include "temperature_data.hpp"
+
 namespace bathwright::speciation {
 namespace {
-
-constexpr double gas_constant_kJ = 8.314462618e-3;  // kJ/(mol K), CODATA 2018
-constexpr double reference_K = 298.15;
 
 std::string without_phase(std::string name) {
   for (const char* phase : {"(s)", "(g)"})
@@ -35,10 +34,15 @@ void carry_to_zero(Constant& constant, const Reaction& reaction, double I) {
   constant.uncertainty = std::hypot(constant.uncertainty, I <= 0.5 ? 0.1 : I <= 1 ? 0.3 : 0.6);
 }
 
-Constant constant_in(const data::CsvRow& row) {
+/// A reaction that does not read is left to resolve(), which says so.
+Constant constant_in(const data::CsvRow& row, const std::string& name, const TemperatureData& temperature) {
   const double dH = row.number("dH_kJ_mol"), dCp = row.number("dCp_J_molK");
-  return {row.number("log10_K"), std::isnan(dH) ? 0 : dH, std::isnan(dCp) ? 0 : dCp,
-          row.number("uncertainty"), !std::isnan(dH)};
+  Constant constant{row.number("log10_K"), std::isnan(dH) ? 0 : dH, std::isnan(dCp) ? 0 : dCp,
+                    row.number("uncertainty"), !std::isnan(dH)};
+  if (const auto reaction = parse_reaction(row["reaction"], row.where()))
+    temperature.complete(constant, name, row["set"].empty() ? "main" : std::string(row["set"]),
+                         !std::isnan(dCp), *reaction);
+  return constant;
 }
 
 struct Builder {
@@ -71,6 +75,7 @@ void supersede(std::vector<Stated>& into, Stated row) {
 
 Builder read_tables(activity::Convention convention, const std::set<std::string_view>& sets) {
   const bool interaction = convention == activity::Convention::interaction;
+  const TemperatureData temperature(convention);
   Builder found;
   const data::CsvTable species = data::built_in_table(
       "equilibria/species.csv", {"log10_K", "ionic_strength", "dH_kJ_mol", "dCp_J_molK", "uncertainty"});
@@ -78,59 +83,47 @@ Builder read_tables(activity::Convention convention, const std::set<std::string_
     const data::CsvRow row = species[i];
     if (!sets.contains(row["set"])) continue;
     if (row["convention"] != "both" && (row["convention"] == "interaction") != interaction) continue;
-    supersede(found.species, StatedSpecies{std::string(row["species"]), std::string(row["reaction"]),
-                                           std::string(row["source"]), row.where(), constant_in(row),
-                                           row.number("ionic_strength")});
+    supersede(found.species,
+              StatedSpecies{std::string(row["species"]), std::string(row["reaction"]),
+                            std::string(row["source"]), row.where(),
+                            constant_in(row, std::string(row["species"]), temperature),
+                            row.number("ionic_strength")});
   }
   const data::CsvTable pairs = data::built_in_table("activity/pitzer_binary.csv", {});
   for (std::size_t i = 0; i < pairs.size(); ++i)
     if (pairs[i]["set"] == "main")
       for (const char* side : {"cation", "anion"}) found.ions.emplace_back(pairs[i][side]);
-  const auto read_phases = [](const char* path, const char* name_column, std::vector<StatedSolid>& into,
-                              const auto& wanted, std::initializer_list<std::string_view> numeric) {
+  const auto read_phases = [&](const char* path, const char* name_column, const char* name_suffix,
+                               std::vector<StatedSolid>& into, const auto& wanted,
+                               std::initializer_list<std::string_view> numeric) {
     const data::CsvTable table = data::built_in_table(path, numeric);
     for (std::size_t i = 0; i < table.size(); ++i) {
       const data::CsvRow row = table[i];
       if (!wanted(row)) continue;
+      const std::string name(row[name_column]);
       const double low = row.number("min_C"), high = row.number("max_C");
-      StatedSolid phase{std::string(row[name_column]),
+      StatedSolid phase{name,
                         std::string(row["formula"]),
                         std::string(row["reaction"]),
                         std::string(row["source"]),
                         std::string(row["note"]),
                         row.where(),
-                        constant_in(row),
+                        constant_in(row, name + name_suffix, temperature),
                         std::isnan(low) ? 0 : low,
                         std::isnan(high) ? 100 : high,
                         row["kinetics"] == "slow"};
       supersede(into, std::move(phase));
     }
   };
-  read_phases("equilibria/solids.csv", "solid", found.solids,
+  read_phases("equilibria/solids.csv", "solid", "", found.solids,
               [&](const data::CsvRow& row) { return sets.contains(row["set"]); },
               {"log10_K", "dH_kJ_mol", "dCp_J_molK", "uncertainty", "min_C", "max_C"});
-  read_phases("equilibria/gases.csv", "gas", found.gases, [](const data::CsvRow&) { return true; },
+  read_phases("equilibria/gases.csv", "gas", "(g)", found.gases, [](const data::CsvRow&) { return true; },
               {"log10_K", "dH_kJ_mol", "uncertainty"});
   return found;
 }
 
 }  // namespace
-
-double Constant::log10_at(units::Celsius t) const {
-  const double T = units::kelvin(t), dCp_kJ = dCp_J_per_molK / 1000;
-  const double ln_shift =
-      -(dH_kJ_per_mol - reference_K * dCp_kJ) / gas_constant_kJ * (1 / T - 1 / reference_K) +
-      dCp_kJ / gas_constant_kJ * std::log(T / reference_K);
-  return log10_K + ln_shift / std::numbers::ln10;
-}
-
-void Constant::add(const Constant& other, double times) {
-  log10_K += times * other.log10_K;
-  dH_kJ_per_mol += times * other.dH_kJ_per_mol;
-  dCp_J_per_molK += times * other.dCp_J_per_molK;
-  uncertainty = std::hypot(uncertainty, times * other.uncertainty);
-  has_dH = has_dH && other.has_dH;
-}
 
 const Equilibria& Equilibria::built_in(activity::Convention convention, activity::ZincSet zinc) {
   using activity::Convention;

@@ -76,7 +76,7 @@ TEST_CASE("no fewer rows lie inside their tolerance than when this was written",
   CHECK(inside[{"isopiestic", ModelKind::pitzer}] >= 19);
   CHECK(inside[{"vapour", ModelKind::pitzer}] >= 10);
   CHECK(inside[{"ph", ModelKind::pitzer}] >= 80);
-  CHECK(inside[{"ph", ModelKind::davies}] >= 69);
+  CHECK(inside[{"ph", ModelKind::davies}] >= 73);
   CHECK(inside[{"solubility", ModelKind::pitzer}] >= 98);
   CHECK(inside[{"supplement_solubility", ModelKind::pitzer}] >= 3);
 }

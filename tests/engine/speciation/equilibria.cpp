@@ -39,32 +39,6 @@ TEST_CASE("H^+ is a basis species, water and complexes are not", "[unit]") {
   CHECK_FALSE(has("NiOH^+"));
 }
 
-TEST_CASE("log K moves with temperature as the integrated van 't Hoff law says", "[unit]") {
-  // dH = 10 kJ/mol, dCp = 0: 10000/8.314462618/ln 10 (1/298.15 - 1/323.15) = 0.135535
-  const Constant constant{1.0, 10, 0, 0, true};
-  CHECK(constant.log10_at({25}) == Approx(1).margin(1e-14).epsilon(0));
-  CHECK(constant.log10_at({50}) == Approx(1.135535).margin(1e-6).epsilon(0));
-  // dCp = -100 J/(mol K) alone: (-100/8.314462618)(ln(323.15/298.15) - 1 + 298.15/323.15)/ln 10 = -0.016488
-  const Constant curved{0, 0, -100, 0, true};
-  CHECK(curved.log10_at({50}) == Approx(-0.016488).margin(1e-6).epsilon(0));
-}
-
-TEST_CASE("the ion product of water is the published one from 0 to 100 degC", "[reference]") {
-  // Marshall & Franck 1981, J. Phys. Chem. Ref. Data 10:295, pKw at saturation pressure, from memory; two
-  // printed decimals, and 0.03 for a constant dCp (engine/data/README.md) up to 60 degC, 0.06 above.
-  for (const auto& [t, pKw] : {std::pair{0.0, 14.94},
-                               {10.0, 14.53},
-                               {25.0, 13.995},
-                               {40.0, 13.54},
-                               {60.0, 13.02},
-                               {80.0, 12.60},
-                               {100.0, 12.25}}) {
-    INFO(t << " degC");
-    CHECK(-association().species().at("OH^-").formation.log10_at({t}) ==
-          Approx(pKw).margin(t <= 60 ? 0.03 : 0.06).epsilon(0));
-  }
-}
-
 TEST_CASE("a bath type's species is written over the basis, through others if need be", "[unit]") {
   const auto with = association().with(
       {species("NiX^+", "Ni^2+ + X^- = NiX^+", 5), species("NiX(OH)", "NiX^+ + OH^- = NiX(OH)", 4)}, {});

@@ -5,28 +5,13 @@
 
 #include <bathwright/activity/make_model.hpp>
 #include <bathwright/base/result.hpp>
-#include <bathwright/units/quantity.hpp>
+#include <bathwright/speciation/constant.hpp>
 #include <map>
 #include <set>
 #include <string>
 #include <vector>
 
 namespace bathwright::speciation {
-
-/// An equilibrium constant and how it moves with temperature.
-///   log10 K(T) = log10 K(25 degC) + [-(dH - T0 dCp)(1/T - 1/T0)/R + (dCp/R) ln(T/T0)] / ln 10,  dCp constant
-/// The form is linear in the three numbers, so constants of added reactions add.
-struct Constant {
-  double log10_K = 0;        ///< 25 degC, molal, zero ionic strength
-  double dH_kJ_per_mol = 0;  ///< 0 and has_dH = false: unknown, no temperature correction
-  double dCp_J_per_molK = 0;
-  double uncertainty = 0;  ///< one standard uncertainty of log10 K
-  bool has_dH = true;
-
-  [[nodiscard]] double log10_at(units::Celsius t) const;
-  /// The constant of `times` times the reaction added to this one.
-  void add(const Constant& other, double times);
-};
 
 /// Coefficients over basis species: what one unit is made of.
 using Composition = std::map<std::string, double>;
