@@ -5,14 +5,15 @@
 #include <bathwright/units/read.hpp>
 
 #include "ranges.hpp"
-#include "schema.hpp"
+#include "recipe_keys.hpp"
 
 namespace bathwright::shopfiles {
 namespace {
 
 using solution::MayForm;
 
-/// Nothing for "auto".
+}  // namespace
+
 std::optional<activity::ModelKind> read_model(Table& root) {
   constexpr std::string_view automatic = "auto",
                              expected = R"("auto", "davies", "debye-huckel", "sit" or "pitzer")";
@@ -29,6 +30,8 @@ std::optional<activity::ModelKind> read_model(Table& root) {
               meant ? "Did you mean " + *meant + '?' : "");
   return std::nullopt;
 }
+
+namespace {
 
 /// A held pH and the ion that balances its charge: both or neither.
 void read_held_pH(Table& root, solution::Recipe& recipe) {
@@ -127,20 +130,25 @@ void read_gases(Table& root, solution::Recipe& recipe) {
 
 }  // namespace
 
+solution::Recipe read_recipe(Table& root, std::string_view file) {
+  solution::Recipe recipe;
+  recipe.file = file;
+  recipe.temperature = root.quantity({"temperature", required, R"("25 degC")"}, units::read_temperature)
+                           .value_or(units::Celsius{});
+  read_held_pH(root, recipe);
+  read_ingredients(root, recipe);
+  read_solids(root, recipe);
+  read_gases(root, recipe);
+  return recipe;
+}
+
 Result<solution::Recipe> read_solution_text(std::string_view name, std::string_view text) {
   auto tree = parse_toml(name, text);
   if (!tree) return tree.problems();
   Document file(name, *std::move(tree));
   Table root = file.root();
-  solution::Recipe recipe;
-  recipe.file = name;
-  recipe.temperature = root.quantity({"temperature", required, R"("25 degC")"}, units::read_temperature)
-                           .value_or(units::Celsius{});
+  solution::Recipe recipe = read_recipe(root, name);
   recipe.model = read_model(root);
-  read_held_pH(root, recipe);
-  read_ingredients(root, recipe);
-  read_solids(root, recipe);
-  read_gases(root, recipe);
   return file.conclude(std::move(recipe));
 }
 

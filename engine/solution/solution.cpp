@@ -4,6 +4,7 @@
 #include <bathwright/speciation/coverage.hpp>
 #include <bathwright/speciation/sensitivity.hpp>
 #include <bathwright/units/show.hpp>
+#include <cassert>
 #include <cmath>
 #include <numbers>
 
@@ -65,10 +66,11 @@ Result<std::vector<std::string>> gas_and_solid_components(const Recipe& recipe,
   return components;
 }
 
-Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
+/// given: the equilibria to use; null: the built-in ones of the model, in the set that the totals ask for.
+Result<Solved> solve_with(const Recipe& recipe, ModelKind kind, const Equilibria* given = nullptr) {
   const activity::Convention convention = activity::convention(kind);
   // What the ingredients are made of is the same in every set.
-  const Equilibria& any_set = Equilibria::built_in(convention);
+  const Equilibria& any_set = given ? *given : Equilibria::built_in(convention);
   auto substances = read_ingredients(recipe, any_set);
   auto components = gas_and_solid_components(recipe, any_set);
   Problems problems;
@@ -86,7 +88,7 @@ Result<Solved> solve_with(const Recipe& recipe, ModelKind kind) {
   speciation::Composition total_molality = contents->component_mol;
   for (auto& [component, amount] : total_molality) amount /= contents->water_kg;
   const activity::ParameterSets sets = activity::parameter_sets_for(total_molality);
-  const Equilibria& equilibria = Equilibria::built_in(convention, sets.zinc);
+  const Equilibria& equilibria = given ? *given : Equilibria::built_in(convention, sets.zinc);
   auto system = ChemicalSystem::make(equilibria, names);
   if (!system) return system.problems();
   auto solver = Solver::prepare(std::make_shared<const ChemicalSystem>(*std::move(system)), kind,
@@ -253,12 +255,8 @@ void list_mean_activities(const Recipe& recipe, const Solved& solved, const IonT
         list((*solid)->formula, speciation::nominal_ions(*formula, *solved.equilibria));
 }
 
-}  // namespace
-
-Result<Solution> solve(const Recipe& recipe) {
-  const auto chosen = choose_model(recipe);
-  if (!chosen) return chosen.problems();
-  const Solved& solved = chosen->solved;
+Result<Solution> describe(const Recipe& recipe, const Chosen& chosen) {
+  const Solved& solved = chosen.solved;
   const Equilibrium& e = solved.equilibrium;
   const ChemicalSystem& system = solved.solver.system();
   const Dissolved content = dissolved(solved);
@@ -268,7 +266,7 @@ Result<Solution> solve(const Recipe& recipe) {
   Solution out;
   out.temperature = recipe.temperature;
   out.model = solved.solver.model().kind();
-  out.model_reason = chosen->reason;
+  out.model_reason = chosen.reason;
   out.pH = e.pH();
   out.ionic_strength = e.ionic_strength;
   out.water_activity = std::exp(e.ln_water_activity);
@@ -298,6 +296,21 @@ Result<Solution> solve(const Recipe& recipe) {
   if (recipe.pH)
     out.pH_held_with = {system.components()[solved.task.pH->counter_ion], e.held_ph_mol / e.water_kg};
   return out;
+}
+
+}  // namespace
+
+Result<Solution> solve(const Recipe& recipe) {
+  const auto chosen = choose_model(recipe);
+  if (!chosen) return chosen.problems();
+  return describe(recipe, *chosen);
+}
+
+Result<Solution> solve(const Recipe& recipe, const speciation::Equilibria& equilibria) {
+  assert(recipe.model);
+  auto solved = solve_with(recipe, *recipe.model, &equilibria);
+  if (!solved) return solved.problems();
+  return describe(recipe, {*std::move(solved), "as asked for"});
 }
 
 }  // namespace bathwright::solution

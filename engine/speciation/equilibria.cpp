@@ -242,6 +242,31 @@ Result<Equilibria> Equilibria::with(const std::vector<StatedSpecies>& species,
   return all;
 }
 
+/// The constant of a row, of `all` as it is, const or not.
+template <class All>
+auto* Equilibria::stated_in(All& all, std::string_view name) {
+  decltype(&all.stated_solids_.front().constant) found = nullptr;
+  for (auto& species : all.stated_species_)
+    if (species.name == name) found = &species.constant;
+  for (auto* phases : {&all.stated_solids_, &all.stated_gases_})
+    for (auto& phase : *phases)
+      if (!found && phase.name == name) found = &phase.constant;
+  return found;
+}
+
+const Constant* Equilibria::stated(std::string_view name) const { return stated_in(*this, name); }
+
+Result<Equilibria> Equilibria::with_constant(std::string_view name, const Constant& constant) const {
+  Equilibria all = *this;
+  Constant* found = stated_in(all, name);
+  if (!found)
+    return Problem{Fault::bad_input, std::string(name), "no species, solid or gas of the tables", "", ""};
+  *found = constant;
+  if (Outcome resolved = all.resolve(); !resolved) return resolved.problems();
+  all.leave_out_held();
+  return all;
+}
+
 Outcome Equilibria::resolve() {
   Problems problems;
   std::map<std::string, std::pair<const StatedSpecies*, Reaction>> formed_by;

@@ -4,6 +4,7 @@
 
 #include <bathwright/base/result.hpp>
 #include <bathwright/solution/recipe.hpp>
+#include <bathwright/speciation/equilibria.hpp>
 #include <map>
 
 namespace bathwright::solution {
@@ -73,5 +74,9 @@ struct Solution {
 /// what cannot be read or made up from known ions, a solid or gas nobody knows, a formula that fits several
 /// phases, amounts that leave no room for water in a litre, and where the solver fails.
 Result<Solution> solve(const Recipe& recipe);
+
+/// The same with other equilibria, as the built-in ones with a constant changed. The recipe states a model of
+/// their convention.
+Result<Solution> solve(const Recipe& recipe, const speciation::Equilibria& equilibria);
 
 }  // namespace bathwright::solution

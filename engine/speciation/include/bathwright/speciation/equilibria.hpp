@@ -74,6 +74,12 @@ class Equilibria {
   [[nodiscard]] Result<Equilibria> with(const std::vector<StatedSpecies>& species,
                                         const std::vector<StatedSolid>& solids) const;
 
+  /// The constant of a species, solid or gas as stated, of its own reaction; null where none has the name.
+  [[nodiscard]] const Constant* stated(std::string_view name) const;
+  /// These equilibria with that constant changed, in all that is formed through it too. Fails on a name that
+  /// stated() does not know.
+  [[nodiscard]] Result<Equilibria> with_constant(std::string_view name, const Constant& constant) const;
+
   [[nodiscard]] const std::map<std::string, SpeciesData>& species() const { return species_; }
   [[nodiscard]] const std::vector<SolidData>& solids() const { return solids_; }
   [[nodiscard]] const std::vector<GasData>& gases() const { return gases_; }
@@ -91,6 +97,8 @@ class Equilibria {
   };
 
   Outcome resolve();
+  template <class All>
+  static auto* stated_in(All& all, std::string_view name);
   /// The fit that holds a species already; nothing where it may stand as a species.
   const Fit* held_by(const SpeciesData& species) const;
   void leave_out_held();

@@ -1,0 +1,94 @@
+// Fits the fewest constants to measurements: weighted least squares, with the engine's own solver as the
+// model. For what nobody published; never for a constant that the same measurements are then to test.
+// Not for: parameters of an activity model, which cannot be replaced one by one.
+#pragma once
+
+#include <bathwright/base/result.hpp>
+#include <bathwright/solution/recipe.hpp>
+#include <bathwright/speciation/equilibria.hpp>
+#include <cstdint>
+#include <optional>
+#include <string>
+#include <vector>
+
+namespace bathwright::regression {
+
+enum class Quantity : std::uint8_t {
+  solubility,       ///< of a solid in excess: mol per kg of liquid water
+  pH,               ///< -log10 a(H^+)
+  water_activity,   ///< mole-fraction scale
+  molality,         ///< of a dissolved species: mol per kg of liquid water
+  partial_pressure  ///< of a gas over the solution, atm
+};
+
+struct Measurement {
+  solution::Recipe recipe;  ///< its model is that of the task
+  Quantity quantity = Quantity::pH;
+  std::string of;            ///< solid, species or gas; empty for pH and water activity
+  double value = 0;          ///< in the unit of the quantity
+  double uncertainty = 1;    ///< one standard uncertainty, in the same unit; > 0
+  bool held_out = false;     ///< not fitted: tells how well the fit predicts
+  std::string label, where;  ///< what it is called; file:line for messages
+};
+
+enum class Parameter : std::uint8_t { log10_K, dH_kJ_per_mol, dCp_J_per_molK };
+
+/// One number to be found: of a species, solid or gas by the name of its row. Unknowns start at what the
+/// equilibria of the task say.
+struct Unknown {
+  std::string constant;
+  Parameter parameter = Parameter::log10_K;
+  std::string where;
+};
+
+struct Task {
+  std::string source;     ///< of the measurements, for the label of what is found
+  std::string fitted_by;  ///< the shop to whose tank it is fitted; empty: a constant for the tables
+  activity::ModelKind model = activity::ModelKind::pitzer;
+  speciation::Equilibria equilibria;  ///< of the model's convention, with the following added
+  std::vector<speciation::StatedSpecies> own_species;
+  std::vector<speciation::StatedSolid> own_solids;
+  std::vector<Unknown> unknowns;
+  std::vector<Measurement> measurements;
+};
+
+struct Found {
+  Unknown unknown;
+  double before = 0, value = 0;
+  double standard_error = 0;
+};
+
+struct Compared {
+  std::string label;
+  double measured = 0, uncertainty = 1;
+  std::optional<double> before, computed;  ///< with the start, with the fit; nothing: not solved
+  bool held_out = false;
+};
+
+struct Fit {
+  std::vector<Found> found;
+  /// (n, n), row by row: of the unknowns, in their units. From the stated uncertainties, widened by
+  /// reduced_chi2 where that is above 1.
+  std::vector<double> covariance;
+  std::vector<Compared> measurements;
+  std::size_t degrees_of_freedom = 0;  ///< fitted measurements less unknowns
+  double reduced_chi2 = 0;             ///< sum ((computed - measured)/uncertainty)^2 / degrees of freedom
+  double fit_error = 0;                ///< root mean square of computed/measured - 1 (pH: of the difference)
+  std::optional<double> test_error;    ///< the same over what was held out
+  int steps = 0;
+};
+
+/// Minimises the sum of ((computed - measured)/uncertainty)^2 over what is not held out by Gauss-Newton with
+/// halved steps; derivatives by central differences, the linear problems by rank-revealing QR. Ends when a
+/// step moves no unknown by 1e-4 of its standard error, or after 50 steps (not_converged).
+/// Fails on an unknown that names no constant, fewer measurements than unknowns, a measurement that cannot be
+/// solved at the start, and on unknowns that the measurements do not determine (all named).
+Result<Fit> fit(const Task& task);
+
+/// Where the numbers come from: "regressed from ...", or "fitted to this tank by ..., from ...".
+[[nodiscard]] std::string provenance(const Task& task);
+
+[[nodiscard]] std::string_view name(Parameter parameter);
+[[nodiscard]] std::string_view name(Quantity quantity);
+
+}  // namespace bathwright::regression
