@@ -62,7 +62,7 @@ class Converter {
     if (node.key.size() > longest_key_bytes)
       refuse(node, "is too long a key", "a key of up to 100 characters");
     if (depth > deepest_nesting) {
-      refuse(node, "is nested too deep", "no table or list within the fourth");
+      refuse(node, "is nested too deep", "no table or list within the fifth");
       return node;
     }
     if (const auto* table = from.as_table()) {

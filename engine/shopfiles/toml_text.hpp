@@ -22,7 +22,7 @@ struct Node {
 
 /// Far above any real shop file; what is beyond is not one.
 inline constexpr std::size_t longest_file_bytes = 1 << 20, longest_text_bytes = 1000, longest_key_bytes = 100;
-inline constexpr int deepest_nesting = 4;
+inline constexpr int deepest_nesting = 5;
 
 /// The whole file at `path`. Fails where it cannot be read or is longer than longest_file_bytes.
 Result<std::string> read_text_file(const std::string& path);

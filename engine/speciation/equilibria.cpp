@@ -83,11 +83,10 @@ Builder read_tables(activity::Convention convention, const std::set<std::string_
     const data::CsvRow row = species[i];
     if (!sets.contains(row["set"])) continue;
     if (row["convention"] != "both" && (row["convention"] == "interaction") != interaction) continue;
-    supersede(found.species,
-              StatedSpecies{std::string(row["species"]), std::string(row["reaction"]),
-                            std::string(row["source"]), row.where(),
-                            constant_in(row, std::string(row["species"]), temperature),
-                            row.number("ionic_strength")});
+    supersede(found.species, StatedSpecies{std::string(row["species"]), std::string(row["reaction"]),
+                                           std::string(row["source"]), row.where(),
+                                           constant_in(row, std::string(row["species"]), temperature),
+                                           row.number("ionic_strength")});
   }
   const data::CsvTable pairs = data::built_in_table("activity/pitzer_binary.csv", {});
   for (std::size_t i = 0; i < pairs.size(); ++i)

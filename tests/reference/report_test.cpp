@@ -1,4 +1,5 @@
 // The tables as a whole: rows that must agree, and a count that must not fall.
+#include <algorithm>
 #include <catch2/catch.hpp>
 #include <map>
 #include <set>
@@ -100,6 +101,14 @@ TEST_CASE("contents per litre are those of the saturated solution", "[unit]") {
   REQUIRE(found);
   CHECK(found->contents.at("MgSO4") * molar_mass("MgSO4") / found->volume_L ==
         Approx(100).margin(1e-5).epsilon(0));
+}
+
+TEST_CASE("a row that a constant was regressed from is judged nowhere", "[unit]") {
+  const auto row = std::find_if(lines().begin(), lines().end(),
+                                [](const Line& line) { return line.figure.id == "SO-0172"; });
+  REQUIRE(row != lines().end());
+  CHECK_FALSE(row->covered());
+  CHECK(row->computed.not_covered == "fitted: log10 K of KNO3 was regressed from this row");
 }
 
 TEST_CASE("the report names every row", "[unit]") {

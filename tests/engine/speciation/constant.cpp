@@ -139,12 +139,19 @@ TEST_CASE("ammonium, boric and phosphoric acid", "[reference]") {
 
 TEST_CASE("salts dissolve with the heat capacity of their ions", "[reference]") {
   // Cp at infinite dilution at 25 degC, J/(mol K), of the equation of state as published with its
-  // coefficients, less Cp of the solid: KCl -114.9 - 51.3, Na2SO4 -193.5 - 128.2,
+  // coefficients, less Cp of the solid: NaCl -85.3 - 50.5, KCl -114.9 - 51.3, Na2SO4 -193.5 - 128.2,
   // K2SO4 -252.8 - 131.5 (all recalled).
   for (const auto& [name, dCp] :
-       {std::pair{"KCl", -166.2}, {"Na2SO4 (thenardite)", -321.7}, {"K2SO4", -384.3}}) {
+       {std::pair{"NaCl", -135.8}, {"KCl", -166.2}, {"Na2SO4 (thenardite)", -321.7}, {"K2SO4", -384.3}}) {
     INFO(name);
     CHECK(solid(name).dissolution.heat_capacity_at({25}) == Approx(dCp).margin(4).epsilon(0));
   }
 }
 
+TEST_CASE("the heat capacity of sodium chloride in water is least negative between 40 and 90 degC",
+          "[reference]") {
+  // Archer 1992, J. Phys. Chem. Ref. Data 21:793, and others.
+  const Constant& salt = solid("NaCl").dissolution;
+  CHECK(salt.heat_capacity_at({65}) > salt.heat_capacity_at({40}));
+  CHECK(salt.heat_capacity_at({65}) > salt.heat_capacity_at({90}));
+}
