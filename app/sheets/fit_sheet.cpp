@@ -34,21 +34,31 @@ std::string csv(const data::CsvTable& table, const Row& row) {
   return line;
 }
 
+/// log10 K, dH and dCp as a file states them.
+void state(const speciation::Constant& constant, Row& row) {
+  row["log10_K"] = fixed(constant.log10_K, 3);
+  if (constant.has_dH) row["dH_kJ_mol"] = fixed(constant.dH_kJ_per_mol, 2);
+  if (constant.dCp_J_per_molK != 0) row["dCp_J_molK"] = fixed(constant.dCp_J_per_molK, 0);
+}
+
 /// The row of the tables with that name, or one begun from what the file states.
 std::pair<std::string, Row> row_of(const regression::Task& task, const std::string& constant) {
-  for (const auto& solid : task.own_solids)
-    if (solid.name == constant)
-      return {
-          "equilibria/solids.csv",
-          {{"solid", constant}, {"formula", solid.formula}, {"set", "main"}, {"reaction", solid.reaction}}};
-  for (const auto& species : task.own_species)
-    if (species.name == constant)
-      return {"equilibria/species.csv",
-              {{"species", constant},
-               {"set", "main"},
-               {"reaction", species.reaction},
-               {"ionic_strength", "0"},
-               {"convention", "both"}}};
+  for (const auto& solid : task.own_solids) {
+    if (solid.name != constant) continue;
+    Row row{{"solid", constant}, {"formula", solid.formula}, {"set", "main"}, {"reaction", solid.reaction}};
+    state(solid.constant, row);
+    return {"equilibria/solids.csv", row};
+  }
+  for (const auto& species : task.own_species) {
+    if (species.name != constant) continue;
+    Row row{{"species", constant},
+            {"set", "main"},
+            {"reaction", species.reaction},
+            {"ionic_strength", "0"},
+            {"convention", "both"}};
+    state(species.constant, row);
+    return {"equilibria/species.csv", row};
+  }
   for (const auto& [path, column] :
        {std::pair{"equilibria/solids.csv", "solid"}, {"equilibria/species.csv", "species"}}) {
     const data::CsvTable table = data::built_in_table(path, {});
@@ -85,19 +95,21 @@ std::string table_row(const regression::Task& task, const regression::Fit& fit, 
   if (!task.fitted_by.empty()) return "";
   auto [path, row] = row_of(task, constant);
   if (path.empty()) return "";
-  const speciation::Constant start = *task.equilibria.stated(constant);
-  std::map<Parameter, double> value{{Parameter::log10_K, start.log10_K}};
-  if (start.has_dH) value[Parameter::dH_kJ_per_mol] = start.dH_kJ_per_mol;
-  if (start.dCp_J_per_molK != 0) value[Parameter::dCp_J_per_molK] = start.dCp_J_per_molK;
   for (const auto& found : fit.found) {
     if (found.unknown.constant != constant) continue;
-    value[found.unknown.parameter] = found.value;
-    if (found.unknown.parameter == Parameter::log10_K) row["uncertainty"] = fixed(found.standard_error, 3);
+    switch (found.unknown.parameter) {
+      case Parameter::log10_K:
+        row["log10_K"] = fixed(found.value, 3);
+        row["uncertainty"] = fixed(found.standard_error, 3);
+        break;
+      case Parameter::dH_kJ_per_mol:
+        row["dH_kJ_mol"] = fixed(found.value, 2);
+        break;
+      case Parameter::dCp_J_per_molK:
+        row["dCp_J_molK"] = fixed(found.value, 0);
+        break;
+    }
   }
-  row["log10_K"] = fixed(value[Parameter::log10_K], 3);
-  if (value.contains(Parameter::dH_kJ_per_mol)) row["dH_kJ_mol"] = fixed(value[Parameter::dH_kJ_per_mol], 2);
-  if (value.contains(Parameter::dCp_J_per_molK))
-    row["dCp_J_molK"] = fixed(value[Parameter::dCp_J_per_molK], 0);
   row["source"] = provenance(task);
   row["note"] = "fit error " + percent(fit.fit_error) +
                 (fit.test_error ? ", error of what was held out " + percent(*fit.test_error) : "");

@@ -24,6 +24,17 @@ double& field(Constant& constant, Parameter parameter) {
   return constant.log10_K;
 }
 
+/// The constant that a fit starts from. A dCp that is to be found is one number, not a curve.
+Constant start_of(const Task& task, const std::string& name) {
+  Constant constant = *task.equilibria.stated(name);
+  for (const Unknown& unknown : task.unknowns) {
+    if (unknown.constant != name || unknown.parameter != Parameter::dCp_J_per_molK) continue;
+    constant.dCp_J_per_molK = constant.heat_capacity_at({25});
+    constant.curve = {};
+  }
+  return constant;
+}
+
 /// Half the width of a central difference: each moves log10 K by about 1e-4 within the range of temperature.
 double step_of(Parameter parameter) {
   return parameter == Parameter::log10_K ? 1e-4 : parameter == Parameter::dH_kJ_per_mol ? 5e-3 : 0.5;
@@ -33,8 +44,7 @@ Result<Equilibria> equilibria_with(const Task& task, const Vector& unknowns) {
   std::map<std::string, Constant> changed;
   for (std::size_t k = 0; k < task.unknowns.size(); ++k) {
     const Unknown& unknown = task.unknowns[k];
-    auto& constant =
-        changed.emplace(unknown.constant, *task.equilibria.stated(unknown.constant)).first->second;
+    auto& constant = changed.emplace(unknown.constant, start_of(task, unknown.constant)).first->second;
     field(constant, unknown.parameter) = unknowns(static_cast<Index>(k));
     constant.has_dH = constant.has_dH || unknown.parameter != Parameter::log10_K;
   }
@@ -200,7 +210,7 @@ Result<Fit> fit(const Task& task) {
   if (Outcome good = check(task); !good) return good.problems();
   Vector at(static_cast<Index>(task.unknowns.size()));
   for (std::size_t k = 0; k < task.unknowns.size(); ++k) {
-    Constant start = *task.equilibria.stated(task.unknowns[k].constant);
+    Constant start = start_of(task, task.unknowns[k].constant);
     at(static_cast<Index>(k)) = field(start, task.unknowns[k].parameter);
   }
   const Vector start = at;
