@@ -72,13 +72,13 @@ TEST_CASE("no fewer rows lie inside their tolerance than when this was written",
   using activity::ModelKind;
   CHECK(inside[{"mean_activity", ModelKind::pitzer}] >= 181);
   CHECK(inside[{"mean_activity", ModelKind::davies}] >= 9);
-  CHECK(inside[{"osmotic", ModelKind::pitzer}] >= 76);
+  CHECK(inside[{"osmotic", ModelKind::pitzer}] >= 77);
   CHECK(inside[{"mixed", ModelKind::pitzer}] >= 52);
-  CHECK(inside[{"isopiestic", ModelKind::pitzer}] >= 19);
-  CHECK(inside[{"vapour", ModelKind::pitzer}] >= 10);
-  CHECK(inside[{"ph", ModelKind::pitzer}] >= 80);
+  CHECK(inside[{"isopiestic", ModelKind::pitzer}] >= 21);
+  CHECK(inside[{"vapour", ModelKind::pitzer}] >= 12);
+  CHECK(inside[{"ph", ModelKind::pitzer}] >= 86);
   CHECK(inside[{"ph", ModelKind::davies}] >= 73);
-  CHECK(inside[{"solubility", ModelKind::pitzer}] >= 98);
+  CHECK(inside[{"solubility", ModelKind::pitzer}] >= 107);
   CHECK(inside[{"supplement_solubility", ModelKind::pitzer}] >= 3);
 }
 
