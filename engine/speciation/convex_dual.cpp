@@ -49,7 +49,7 @@ void find_null_space(const Workspace& w, NullSpace& space) {
       }
       space.active[static_cast<std::size_t>(space.rows++)] = k;
     }
-  const Index rows = space.rows;
+  Index rows = space.rows;
   if (rows == 0) return;
   Table E(rows, n);
   for (Index r = 0; r < rows; ++r)
@@ -65,8 +65,12 @@ void find_null_space(const Workspace& w, NullSpace& space) {
       if (pivot < 0 || lasts < least) pivot = i, least = lasts;
     }
     if (pivot < 0) {
-      space.independent = false;
-      return;
+      // At a fixed activity of water this condition says what the others say: two hydrates of one salt side
+      // by side. It waits for the coupled Newton, where water gives way.
+      space.active[static_cast<std::size_t>(r)] = space.active[static_cast<std::size_t>(rows - 1)];
+      E.row(r) = E.row(rows - 1);
+      --r, --rows;
+      continue;
     }
     taken[static_cast<std::size_t>(pivot)] = true;
     space.pivots[static_cast<std::size_t>(r)] = pivot;
@@ -74,6 +78,7 @@ void find_null_space(const Workspace& w, NullSpace& space) {
     for (Index other = 0; other < rows; ++other)
       if (other != r && E(other, pivot) != 0) E.row(other) -= E(other, pivot) * E.row(r);
   }
+  space.rows = rows;
   space.Z.setZero(n, n - rows);
   Index column = 0;
   for (Index i = 0; i < n; ++i) {

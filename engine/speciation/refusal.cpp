@@ -41,6 +41,8 @@ Problem beyond_reach(const Workspace& reached, const Task& task) {
   double I = 0;
   for (Index j = 0; j < reached.count(); ++j) I += 0.5 * m(j) * reached.charge(j) * reached.charge(j);
   const double total_kg = reached.total_water / water_mol_per_kg;
+  // Not even the most dilute solution of the last route was found: nothing is known about the strength.
+  if (total_kg > 50 * task.water_kg) return not_converged("the equilibrium did not converge");
   char text[240];
   if (reached.water_kg < 0.05 * total_kg) {
     std::snprintf(

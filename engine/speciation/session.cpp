@@ -171,30 +171,75 @@ bool settle(Workspace& w, int& iterations) {
   return !w.rebase(m) || solve_coupled(w, iterations);
 }
 
-bool solve_cold(Workspace& w, Mark& mark, const Task& task, const Constants& ln_K, int& iterations) {
-  const auto begin = [&] {
-    w.load(task, ln_K);
-    guess_coefficients(w);
-    cold_start(w);
-  };
-  const auto direct = [&] {
+/// Routes to an answer from nothing, each sturdier and slower than the one before.
+class ColdSolve {
+ public:
+  ColdSolve(Workspace& w, Mark& mark, const Task& task, const Constants& ln_K, int& iterations)
+      : w_(w), mark_(mark), task_(task), ln_K_(ln_K), iterations_(iterations) {}
+
+  bool any() { return direct() || by_releasing_ph() || by_approach() || by_concentration(); }
+
+  bool direct() {
     begin();
-    if (!solve_convex(w, 1e-2, iterations)) return false;
-    move_coefficients(w, 1);
-    balance_water(w);
-    pull_back(w);
-    return solve_convex(w, 1e-3, iterations) && settle(w, iterations);
-  };
-  const auto by_approach = [&] {
+    return from_start();
+  }
+  bool by_approach() {
     begin();
-    return approach(w, iterations) && settle(w, iterations);
-  };
-  const auto by_concentration = [&] {
+    return approach(w_, iterations_) && settle(w_, iterations_);
+  }
+  bool by_concentration() {
     begin();
-    return concentrate(w, mark, iterations) && settle(w, iterations);
-  };
-  return direct() || by_approach() || by_concentration();
-}
+    return concentrate(w_, mark_, iterations_) && settle(w_, iterations_);
+  }
+
+  /// First with the pH free, then walked to where it is held.
+  bool by_releasing_ph() {
+    if (!task_.pH) return false;
+    constexpr double most = 1.0, least = 0.01;  // steps, ln units of the activity of H^+
+    w_.load(task_, ln_K_);
+    Phase& held = w_.phases.back();
+    held.active = false;
+    guess_coefficients(w_);
+    cold_start(w_);
+    if (!from_start()) return false;
+    const double target = held.ln_K;
+    double at = held.condition.dot(w_.x) + held.water * w_.ln_aw, step = most;
+    held.active = true;
+    while (at != target) {
+      const double next = std::abs(target - at) <= step ? target : at + std::copysign(step, target - at);
+      mark_.set(w_);
+      held.ln_K = next;
+      if (finish(w_, iterations_)) {
+        at = next;
+      } else {
+        mark_.restore(w_);
+        step /= 3;
+        if (step < least) return false;
+      }
+    }
+    return settle(w_, iterations_);
+  }
+
+ private:
+  void begin() {
+    w_.load(task_, ln_K_);
+    guess_coefficients(w_);
+    cold_start(w_);
+  }
+  bool from_start() {
+    if (!solve_convex(w_, 1e-2, iterations_)) return false;
+    move_coefficients(w_, 1);
+    balance_water(w_);
+    pull_back(w_);
+    return solve_convex(w_, 1e-3, iterations_) && settle(w_, iterations_);
+  }
+
+  Workspace& w_;
+  Mark& mark_;
+  const Task& task_;
+  const Constants& ln_K_;
+  int& iterations_;
+};
 
 }  // namespace
 
@@ -220,9 +265,16 @@ struct Session::Storage {
   Outcome solve(const Task& task, Equilibrium& answer) {
     int iterations = 0;
     solved = false;
-    if (!solve_cold(workspace, mark, task, ln_K, iterations))
-      return refusal(workspace, solver->system(), task);
-    return finish_with(task, iterations, answer);
+    ColdSolve cold(workspace, mark, task, ln_K, iterations);
+    if (!cold.any()) return refusal(workspace, solver->system(), task);
+    Outcome found = finish_with(task, iterations, answer);
+    // Where the Gibbs energy curves downward there is another equilibrium: a sturdier route may find it.
+    if (found && !answer.stable && cold.by_approach()) {
+      const Outcome other = finish_with(task, iterations, answer);
+      if (other && answer.stable) return other;
+      if (cold.direct()) return finish_with(task, iterations, answer);
+    }
+    return found;
   }
 };
 

@@ -20,8 +20,7 @@ Residuals verify(const Solver& solver, const Constants& ln_K, const Task& task, 
   const double ln_water = solver.model().evaluate(answer.molality, ln_gamma);
   // A free ion may be less than a double can hold; its activity is then taken at its word.
   for (std::size_t j = 0; j < count; ++j)
-    ln_a[j] =
-        answer.molality[j] > 0 ? std::log(answer.molality[j]) + ln_gamma[j] : answer.ln_activity[j];
+    ln_a[j] = answer.molality[j] > 0 ? std::log(answer.molality[j]) + ln_gamma[j] : answer.ln_activity[j];
   for (std::size_t j = 0; j < count; ++j) {
     const SystemSpecies& species = system.species()[j];
     if (!std::isfinite(ln_a[j])) continue;  // a component that is absent, and all that needs it
