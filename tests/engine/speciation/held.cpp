@@ -1,8 +1,11 @@
 // Held pH and held gas pressures.
+#include <random>
+
 #include "systems.hpp"
 
 using namespace bathwright;
 using namespace bathwright::speciation;
+using activity::ModelKind;
 
 TEST_CASE("a pH is held with any counter-ion, and charge stays balanced", "[property]") {
   const Solver solver = solver_of({"Na^+", "Cl^-", "SO4^2-", "Ca^2+", "CO3^2-"});
@@ -59,4 +62,77 @@ TEST_CASE("pH and gas held at once", "[property]") {
   const Equilibrium answer = solved(solver, task);
   CHECK(answer.pH() == Approx(8.3).margin(1e-9).epsilon(0));
   CHECK(answer.gas_bar[*solver.system().gas("CO2")] == Approx(4.0e-4).margin(0).epsilon(1e-9));
+}
+
+namespace {
+
+struct Held {
+  int asked = 0, refused = 0;
+};
+
+/// Usual baths, each held within a pH unit of its own pH by the ion of its own alkali or acid.
+Held hold_near_own_pH(const BathSystem& bath, ModelKind kind, unsigned seed, int cases) {
+  const Solver solver = solver_of(bath.components(), room, kind);
+  const ChemicalSystem& system = solver.system();
+  std::mt19937_64 random(seed);
+  std::uniform_real_distribution<double> away(-1, 1);
+  Held found;
+  for (int number = 0; number < cases; ++number) {
+    Task task = near_usual(bath, system, 2, random);
+    const double own = solved(solver, task).pH(), more = away(random);
+    const std::size_t ion = *system.component(more > 0 ? bath.cation : bath.anion);
+    task.pH = HeldPh{own + more, ion};
+    INFO(activity::name(kind) << ", " << bath.name << ", seed " << seed << ", case " << number << ": pH "
+                              << own + more << " with " << system.components()[ion] << ", own pH " << own);
+    const auto held = solver.solve(task);
+    ++found.asked;
+    if (!held) {
+      ++found.refused;
+      continue;
+    }
+    CHECK(held->pH() == Approx(own + more).margin(1e-8).epsilon(0));
+    CHECK(held->residuals.charge_mol_per_kg < 1e-10);
+    // The acid or alkali that holds the pH is the one that reaches it. Where the energy does not curve upward
+    // another answer may be found.
+    task.pH.reset();
+    task.component_mol[0] += held->held_ph_mol;
+    task.component_mol[ion] -= held->held_ph_mol / system.species()[ion].charge;
+    const Equilibrium given = solved(solver, task);
+    if (bath.name != "pyrophosphate copper" || kind != ModelKind::pitzer)
+      CHECK(given.pH() == Approx(own + more).margin(1e-6).epsilon(0));
+  }
+  return found;
+}
+
+}  // namespace
+
+TEST_CASE("a pH near a bath's own is held, and its acid or alkali reaches it when given", "[property]") {
+  for (const ModelKind kind : {ModelKind::davies, ModelKind::debye_huckel, ModelKind::sit, ModelKind::pitzer})
+    for (const BathSystem& bath : bath_systems()) {
+      if (kind == ModelKind::pitzer && bath.name == "pyrophosphate copper") continue;  // see below
+      INFO(activity::name(kind) << ", " << bath.name);
+      const Held found = hold_near_own_pH(bath, kind, 20260806, 60);
+      CHECK(found.asked == 60);
+      CHECK(found.refused <= 1);  // 0 once what follows is mended
+    }
+}
+
+// Not mended yet: refused as if the ion had to leave, or not converged: of pyrophosphate 1 in 400, under
+// Pitzer 1 in 50.
+TEST_CASE("a pH near a bath's own is never refused", "[property][!mayfail]") {
+  for (const ModelKind kind :
+       {ModelKind::davies, ModelKind::debye_huckel, ModelKind::sit, ModelKind::pitzer}) {
+    INFO(activity::name(kind));
+    CHECK(hold_near_own_pH(bath_systems()[1], kind, 20260807, 400).refused == 0);
+  }
+  const Solver solver = solver_of(bath_systems()[0].components(), {5}, ModelKind::davies);
+  Task task = task_of(solver.system(), {{"H^+", 0.0001685501730390726},
+                                        {"Na^+", 0.0001},
+                                        {"Cl^-", 0.47466013400063339},
+                                        {"H3BO3", 0.3584057904149085},
+                                        {"Ni^2+", 2.5909544206517787},
+                                        {"SO4^2-", 2.3537586287379817}});
+  let_precipitate(task, solver.system(), bath_systems()[0]);
+  task.pH = HeldPh{4.31, *solver.system().component("Na^+")};
+  CHECK(solver.solve(task));
 }
