@@ -197,9 +197,8 @@ TEST_CASE("two hydrates of one salt side by side fix the water's activity", "[pr
   }
 }
 
-// Not mended yet: refused, though the liquid of the case above is an answer. An excess of both must lend
-// water by turning the one into the other.
-TEST_CASE("two hydrates of one salt in excess fix the water's activity", "[property][!mayfail]") {
+// An excess of both must lend water by turning the one into the other.
+TEST_CASE("two hydrates of one salt in excess fix the water's activity", "[property]") {
   const Solver solver = solver_of({"Na^+", "SO4^2-", "Cl^-"});
   Task task = task_of(solver.system(), {{"Na^+", 1}, {"Cl^-", 1}});
   set_rule(task, solver.system(), decahydrate, SolidRule::in_excess);
