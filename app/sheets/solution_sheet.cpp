@@ -18,10 +18,9 @@ std::string give_or_take(const std::optional<double>& u) {
 
 std::string solid_state(const solution::SolidFound& solid) {
   if (solid.dissolved_mol > 0)
-    return figure(solid.dissolved_mol) +
-           (solid.u_dissolved_mol ? " ± " + units::significant(*solid.u_dissolved_mol, 1) : "") +
-           " mol/kg dissolves";
-  if (solid.precipitated_mol > 0) return figure(solid.precipitated_mol) + " mol/kg precipitates";
+    return "dissolves " + figure(solid.dissolved_mol) +
+           (solid.u_dissolved_mol ? " ± " + units::significant(*solid.u_dissolved_mol, 1) : "");
+  if (solid.precipitated_mol > 0) return "precipitates " + figure(solid.precipitated_mol);
   if (!solid.covers_temperature) return "no data at this temperature";
   if (solid.saturation_index > 0) return solid.slow ? "supersaturated, forms slowly" : "supersaturated";
   return "stays dissolved";
@@ -50,7 +49,7 @@ void species(Lines& lines, const solution::Solution& s) {
 }
 
 void solids(Lines& lines, const solution::Solution& s) {
-  Table table({{"solid"}, {"log10(Q/K)", Align::number}, {""}, {"state"}});
+  Table table({{"solid"}, {"log10(Q/K)", Align::number}, {""}, {"state, mol/kg"}});
   for (const auto& solid : s.solids)
     if (solid.saturation_index > far_below_saturation || solid.in_excess)
       table.add({pretty(solid.name), fixed(solid.saturation_index, 2), give_or_take(solid.u_saturation_index),
