@@ -373,7 +373,21 @@ class Collector {
       note(Kind::no_temperature_data, {cation, anion},
            "no temperature dependence published; the value at 25 degC taken")
           .u_ln_gamma = doubts().slope_per_K * std::abs(zc * za * (t_.v - reference_C));
+    else if (!rows.table)
+      note_extrapolated_slope(cation, anion);
     note_range(rows, cation, anion);
+  }
+
+  /// Linear slopes were derived for 15 to 50 degC (engine/data/README.md); further out the change is as
+  /// uncertain as one that nobody published.
+  void note_extrapolated_slope(std::uint32_t cation, std::uint32_t anion) {
+    constexpr double from_C = 15, to_C = 50;
+    const double beyond_K = std::max({from_C - t_.v, t_.v - to_C, 0.0});
+    if (beyond_K <= 0) return;
+    note(Kind::no_temperature_data, {cation, anion},
+         "its linear temperature dependence is meant for 15 to 50 degC")
+        .u_ln_gamma =
+        doubts().slope_per_K * beyond_K * std::abs(solutes_[cation].charge * solutes_[anion].charge);
   }
 
   /// Notes what is not published: the value itself, or its change from 25 degC.

@@ -78,7 +78,9 @@ TEST_CASE("no fewer rows lie inside their tolerance than when this was written",
   CHECK(inside[{"vapour", ModelKind::pitzer}] >= 12);
   CHECK(inside[{"ph", ModelKind::pitzer}] >= 86);
   CHECK(inside[{"ph", ModelKind::davies}] >= 73);
-  CHECK(inside[{"solubility", ModelKind::pitzer}] >= 107);
+  // 107 until linear slopes outside 15 to 50 degC were called a doubt: one right answer fewer, five wrong
+  // ones.
+  CHECK(inside[{"solubility", ModelKind::pitzer}] >= 106);
   CHECK(inside[{"supplement_solubility", ModelKind::pitzer}] >= 3);
 }
 
