@@ -7,6 +7,7 @@
 #include "answer.hpp"
 #include "convex_dual.hpp"
 #include "coupled_newton.hpp"
+#include "lane_newton.hpp"
 #include "refusal.hpp"
 #include "task_check.hpp"
 
@@ -298,6 +299,62 @@ Outcome Session::solve_near_last(const Task& task, Equilibrium& answer) {
     if (settle(s.workspace, iterations) && s.finish_with(task, iterations, answer)) return Done{};
   }
   return s.solve(task, answer);
+}
+
+Outcome Session::solve_variants(const Task& task, std::span<const Variant> variants,
+                                const VariantVisit& visit) {
+  Storage& s = *storage_;
+  Equilibrium answer;
+  const Constants own = s.ln_K;
+  if (Outcome nominal = solve(task, answer); !nominal) return nominal;
+  Workspace& w = s.workspace;
+  Mark nominal(w);
+  nominal.set(w);
+  LaneProblem problem(w);
+  LaneTables tables(w);
+  Task varied = task;
+  Session alone(*s.solver);  // for those that leave the lanes
+  for (std::size_t first = 0; first < variants.size(); first += lanes) {
+    const std::size_t count = std::min(lanes, variants.size() - first);
+    std::array<bool, lanes> in_lane{};
+    nominal.restore(w);
+    for (std::size_t lane = 0; lane < lanes; ++lane) {
+      const Variant& variant = variants[first + std::min(lane, count - 1)];
+      varied.component_mol = variant.component_mol;
+      in_lane[lane] = lane < count && check(s.solver->system(), varied) && w.reload(varied, variant.ln_K);
+      if (!in_lane[lane]) w.reload(task, own);
+      problem.set_lane(lane, w);
+    }
+    const std::array<bool, lanes> arrived = lane_newton(w, problem, tables);
+    for (std::size_t lane = 0; lane < count; ++lane) {
+      const Variant& variant = variants[first + lane];
+      varied.component_mol = variant.component_mol;
+      s.ln_K = variant.ln_K;
+      Outcome found = Done{};
+      const auto from_lane = [&] {
+        nominal.restore(w);
+        problem.copy_state(lane, w);
+      };
+      bool settled = in_lane[lane] && arrived[lane];
+      if (settled) {
+        from_lane();
+        settled = static_cast<bool>(s.finish_with(varied, 0, answer));
+      }
+      if (!settled && in_lane[lane] && w.reload(varied, variant.ln_K)) {  // another set of phases, perhaps
+        int iterations = 0;
+        from_lane();
+        settled = finish(w, iterations) && s.finish_with(varied, iterations, answer);
+      }
+      if (!settled) {
+        alone.ln_K() = variant.ln_K;
+        found = alone.solve_near_last(varied, answer);
+      }
+      visit(first + lane, found, answer);
+    }
+  }
+  s.ln_K = own;
+  s.solved = false;
+  return Done{};
 }
 
 }  // namespace bathwright::speciation

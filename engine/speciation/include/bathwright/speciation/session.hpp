@@ -3,8 +3,16 @@
 #pragma once
 
 #include <bathwright/speciation/solver.hpp>
+#include <functional>
+#include <span>
 
 namespace bathwright::speciation {
+
+/// Other amounts and constants for one task: a sample of an uncertainty.
+struct Variant {
+  std::vector<double> component_mol;  ///< per component, mol; what the task has none of stays out
+  Constants ln_K;
+};
 
 class Session {
  public:
@@ -22,6 +30,16 @@ class Session {
   /// set of components or phases is present, as solve(). The result is the same to rounding, unless the model
   /// has left its range and has several equilibria (coverage.hpp calls no such answer valid).
   Outcome solve_near_last(const Task& task, Equilibrium& answer);
+
+  /// What to do with the answer to a variant, in order; `answer` holds during the call, where `solved`.
+  using VariantVisit =
+      std::function<void(std::size_t variant, const Outcome& solved, const Equilibrium& answer)>;
+
+  /// Solves the task, then every variant of it, each checked like any other answer. Eight variants at a time
+  /// share the steps of one coupled Newton from the answer to the task; those that this does not settle
+  /// (another set of phases, a long way) are solved by themselves. Fails as solve() does on the task; takes
+  /// storage for the eight.
+  Outcome solve_variants(const Task& task, std::span<const Variant> variants, const VariantVisit& visit);
 
   /// The constants this session solves with: those of the solver until changed.
   Constants& ln_K();

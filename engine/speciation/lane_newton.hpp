@@ -1,0 +1,37 @@
+// The coupled Newton of coupled_newton.hpp for eight variants of a problem at once, with one set of phases.
+#pragma once
+
+#include <array>
+
+#include "lanes.hpp"
+#include "workspace.hpp"
+
+namespace bathwright::speciation {
+
+/// Eight problems over the basis and the active phases of one workspace, and where their solutions stand.
+struct LaneProblem {
+  LaneArray total, ln_K, phase_ln_K;  ///< per component; species; phase of the workspace
+  Lanes total_water;
+  LaneArray x, ln_m, ln_gamma, phase_mol;  ///< per component; species; kind; phase
+  Lanes ln_aw, water_kg;
+
+  explicit LaneProblem(const Workspace& w);
+  /// Amounts and constants of the workspace as those of one lane; the state of the workspace as its start.
+  void set_lane(std::size_t lane, const Workspace& w);
+  /// The state of one lane, for the answer.
+  void copy_state(std::size_t lane, Workspace& w) const;
+};
+
+/// Room for lane_newton; grows to the size of the workspace once.
+struct LaneTables {
+  LaneArray U, gamma, X, system, kinds, H, m, defect;
+  explicit LaneTables(const Workspace& w);
+
+ private:
+  LaneTables(std::size_t components, std::size_t species, std::size_t kinds_count, std::size_t phases);
+};
+
+/// Takes the lanes to the tolerance of solve_coupled. Returns which arrived.
+std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t);
+
+}  // namespace bathwright::speciation
