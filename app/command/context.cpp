@@ -39,6 +39,8 @@ Json document(const std::vector<std::string>& warnings) {
   return {{"program", "bathwright"}, {"version", BATHWRIGHT_VERSION}, {"warnings", warnings}};
 }
 
+Json or_null(const std::optional<double>& value) { return value ? Json(*value) : Json(); }
+
 void print(const sheets::Lines& lines) {
   for (const std::string& line : lines) std::printf("%s\n", line.c_str());
 }

@@ -6,6 +6,7 @@
 #include <bathwright/sheets/text.hpp>
 #include <functional>
 #include <nlohmann/json.hpp>
+#include <optional>
 
 namespace bathwright::command {
 
@@ -34,6 +35,9 @@ struct Context {
 
 /// A document as text: on one line, or indented. No zero carries a sign, and what is no UTF-8 is replaced.
 [[nodiscard]] std::string text_of(Json document, int indent = -1);
+
+/// null where there is none.
+[[nodiscard]] Json or_null(const std::optional<double>& value);
 
 void print(const sheets::Lines& lines);
 void print(const Json& document);

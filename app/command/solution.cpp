@@ -8,16 +8,13 @@
 namespace bathwright::command {
 namespace {
 
-/// null where there is none.
-Json json_of(const std::optional<double>& value) { return value ? Json(*value) : Json(); }
-
 Json json_of(const solution::Solution& s) {
   Json doc = document(s.warnings);
   doc["temperature_C"] = s.temperature.v;
   doc["model"] = activity::name(s.model);
   doc["model_reason"] = s.model_reason;
   doc["pH"] = s.pH;
-  doc["pH_standard_uncertainty"] = json_of(s.u_pH);
+  doc["pH_standard_uncertainty"] = or_null(s.u_pH);
   doc["ionic_strength"] = s.ionic_strength;
   doc["water_activity"] = s.water_activity;
   doc["osmotic_coefficient"] = s.osmotic_coefficient;
@@ -34,7 +31,7 @@ Json json_of(const solution::Solution& s) {
                               {"molarity", line.molarity},
                               {"gamma", line.gamma},
                               {"log10_activity", line.log10_activity},
-                              {"log10_activity_standard_uncertainty", json_of(line.u_log10_activity)}});
+                              {"log10_activity_standard_uncertainty", or_null(line.u_log10_activity)}});
   doc["mean_activity"] = Json::object();
   for (const auto& [formula, gamma] : s.mean_activity) doc["mean_activity"][formula] = gamma;
   doc["solids"] = Json::array();
@@ -42,10 +39,10 @@ Json json_of(const solution::Solution& s) {
     doc["solids"].push_back({{"name", solid.name},
                              {"formula", solid.formula},
                              {"saturation_index", solid.saturation_index},
-                             {"saturation_index_standard_uncertainty", json_of(solid.u_saturation_index)},
+                             {"saturation_index_standard_uncertainty", or_null(solid.u_saturation_index)},
                              {"precipitated_mol", solid.precipitated_mol},
                              {"dissolved_mol", solid.dissolved_mol},
-                             {"dissolved_mol_standard_uncertainty", json_of(solid.u_dissolved_mol)},
+                             {"dissolved_mol_standard_uncertainty", or_null(solid.u_dissolved_mol)},
                              {"slow", solid.slow},
                              {"covers_temperature", solid.covers_temperature}});
   doc["gases"] = Json::array();

@@ -1,4 +1,5 @@
 // bathwright tank TANK: the state of a tank.
+#include <bathwright/bath/uncertainty.hpp>
 #include <bathwright/sheets/tank_sheet.hpp>
 
 #include "context.hpp"
@@ -30,16 +31,22 @@ Json json_of(const Shop& shop, const bath::TankView& view, const sheets::StateRe
     doc["species"].push_back({{"name", s.name},
                               {"molality", s.molality},
                               {"gamma", s.gamma},
-                              {"log10_activity", s.log10_activity}});
+                              {"log10_activity", s.log10_activity},
+                              {"log10_activity_standard_uncertainty", or_null(s.u_log10_activity)}});
   doc["headroom"] = Json::array();
   for (const auto& h : view.headroom)
     doc["headroom"].push_back({{"solid", h.solid},
                                {"slow", h.slow},
                                {"working_log10", h.covers_working ? Json(h.working_log10) : Json(nullptr)},
                                {"idle_log10", h.covers_idle ? Json(h.idle_log10) : Json(nullptr)},
+                               {"working_log10_standard_uncertainty", or_null(h.u_working_log10)},
+                               {"idle_log10_standard_uncertainty", or_null(h.u_idle_log10)},
                                {"working_kg", h.working_kg},
                                {"idle_kg", h.idle_kg},
-                               {"forms_above_pH", h.forms_above_pH}});
+                               {"working_kg_standard_uncertainty", or_null(h.u_working_kg)},
+                               {"idle_kg_standard_uncertainty", or_null(h.u_idle_kg)},
+                               {"forms_above_pH", h.forms_above_pH},
+                               {"forms_above_pH_standard_uncertainty", or_null(h.u_forms_above_pH)}});
   doc["indicators"] = Json::array();
   for (const auto& i : view.indicators)
     doc["indicators"].push_back({{"id", i.id},
@@ -57,7 +64,7 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   if (!shop) return fail(context, shop.problems());
   const auto start = starting_state(context, *shop, readings_path);
   if (!start) return fail(context, start.problems());
-  const auto view = shop->chemistry.view(start->state);
+  const auto view = bath::view_with_uncertainty(shop->chemistry, start->state);
   if (!view) return fail(context, view.problems());
   if (context.json)
     print(json_of(*shop, *view, start->read));

@@ -28,4 +28,6 @@ std::string figure(double value, int digits) {
   return std::isnan(value) ? "" : units::significant(value, digits);
 }
 
+std::string give_or_take(const std::optional<double>& u) { return u ? "± " + fixed(*u, 2) : ""; }
+
 }  // namespace bathwright::sheets

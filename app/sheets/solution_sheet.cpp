@@ -10,12 +10,6 @@ constexpr double trace_molality = 1e-9;
 constexpr double trace_pressure_atm = 1e-8;  // a hundredth of a part per million of the air
 constexpr double far_below_saturation = -3;
 
-/// "± 0.05" with the digits a standard uncertainty deserves; empty where there is none.
-std::string give_or_take(const std::optional<double>& u) {
-  if (!u) return {};
-  return "± " + (*u < 0.005 ? std::string("0.00") : fixed(*u, 2));
-}
-
 std::string solid_state(const solution::SolidFound& solid) {
   if (solid.dissolved_mol > 0)
     return "dissolves " + figure(solid.dissolved_mol) +

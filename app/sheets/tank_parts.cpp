@@ -9,11 +9,11 @@ namespace {
 
 constexpr double shown_molality = 1e-4;  // below it a species matters to no level
 
-std::string room(bool covers, double log10_room, double kg) {
+std::string room(bool covers, double log10_room, double kg, const std::optional<double>& u_kg) {
   if (!covers) return "no data here";
   if (std::isnan(kg)) return (log10_room >= 0 ? "undersaturated" : "supersaturated");
-  if (kg < 0) return "crystallises " + figure(-kg, 3) + " kg";
-  return "room for " + figure(kg, 3) + " kg";
+  return (kg < 0 ? "forms " : "room for ") + figure(std::abs(kg), 3) +
+         (u_kg ? " ± " + units::significant(*u_kg, 1) : "") + " kg";
 }
 
 void add_if_over(std::vector<std::string>& out, const bath::Headroom& h, units::Celsius t, bool covers,
@@ -54,21 +54,24 @@ Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headro
                {"at " + units::show(tank.idle_temperature, "degC", 3)}});
   for (const bath::Headroom& h : headroom) {
     if (!std::isnan(h.forms_above_pH)) {
-      table.add({pretty(h.solid), "forms above pH " + fixed(h.forms_above_pH, 2), ""});
+      table.add({pretty(h.solid),
+                 "above pH " + fixed(h.forms_above_pH, 2) + " " + give_or_take(h.u_forms_above_pH), ""});
       continue;
     }
     if (!h.covers_working && !h.covers_idle) continue;  // a hydrate that is stable at neither temperature
-    table.add({pretty(h.solid), room(h.covers_working, h.working_log10, h.working_kg),
-               room(h.covers_idle, h.idle_log10, h.idle_kg)});
+    table.add({pretty(h.solid), room(h.covers_working, h.working_log10, h.working_kg, h.u_working_kg),
+               room(h.covers_idle, h.idle_log10, h.idle_kg, h.u_idle_kg)});
   }
   return table.lines();
 }
 
 Lines free_ions(const std::vector<bath::SpeciesView>& species) {
-  Table table({{"free"}, {"mol/kg", Align::number}, {"gamma", Align::number}, {"log10 a", Align::number}});
+  Table table(
+      {{"free"}, {"mol/kg", Align::number}, {"gamma", Align::number}, {"log10 a", Align::number}, {""}});
   for (const auto& s : species)
     if (s.molality >= shown_molality || s.name == "H^+")
-      table.add({pretty(s.name), figure(s.molality), figure(s.gamma), fixed(s.log10_activity, 3)});
+      table.add({pretty(s.name), figure(s.molality), figure(s.gamma), fixed(s.log10_activity, 3),
+                 give_or_take(s.u_log10_activity)});
   return table.lines();
 }
 

@@ -35,6 +35,11 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
   append(lines, free_ions(view.species));
   heading(lines, "Headroom");
   append(lines, headroom(tank, view.headroom));
+  const auto uncertain = [](const bath::SpeciesView& s) { return s.u_log10_activity.has_value(); };
+  if (std::any_of(view.species.begin(), view.species.end(), uncertain))
+    say(lines,
+        "  ±: one standard uncertainty, of the constants and of interactions that are missing or estimated; "
+        "levels and pH count as exact.");
   if (!view.indicators.empty()) {
     heading(lines, "Indicators");
     append(lines, indicators(view.indicators));

@@ -177,6 +177,13 @@ TEST_CASE("tank, sources and plugins answer in JSON too", "[unit][command]") {
                                                               {"species/[]/molality", "number"},
                                                               {"headroom/[]/solid", "text"},
                                                               {"headroom/[]/working_kg", "number?"}});
+  check_all(bench.run("tank " + app_test::tank + " --json"),
+            {{"species/[]/log10_activity_standard_uncertainty", "number"},
+             {"headroom/[]/working_log10_standard_uncertainty", "number?"},
+             {"headroom/[]/idle_log10_standard_uncertainty", "number?"},
+             {"headroom/[]/working_kg_standard_uncertainty", "number?"},
+             {"headroom/[]/idle_kg_standard_uncertainty", "number?"},
+             {"headroom/[]/forms_above_pH_standard_uncertainty", "number?"}});
   check_all(bench.run("sources HSO4^- --json"),
             {{"constants/[]/source", "text"}, {"constants/[]/values", "text"}});
   check_all(bench.run("plugins list --json"), {{"plugins/[]/id", "text"}, {"plugins/[]/state", "text"}});

@@ -1,3 +1,5 @@
+#include <bathwright/bath/uncertainty.hpp>
+#include <bathwright/speciation/sensitivity.hpp>
 #include <cmath>
 #include <numbers>
 #include <random>
@@ -180,4 +182,51 @@ TEST_CASE("a nickel bath is far from ideal", "[reference][bath]") {
       CHECK(species.gamma < 0.08);
       CHECK(species.gamma > 0.03);
     }
+}
+
+TEST_CASE("headroom and free ions carry the uncertainty of the solved tank", "[unit][bath]") {
+  const bath::Chemistry& chemistry = demo::chemistry();
+  const bath::TankState state = demo::state(263.4, 48.03, 36.97, 4.1);
+  const bath::TankView view = must(bath::view_with_uncertainty(chemistry, state));
+  const auto solved = [&](const speciation::Solver& solver, std::optional<double> pH, const char* excess) {
+    speciation::Task task;
+    task.component_mol = state.component_mol;
+    task.water_kg = state.water_kg;
+    if (pH) task.pH = speciation::HeldPh{*pH, chemistry.counter_ion()};
+    if (excess) {
+      task.solids.assign(solver.system().solids().size(), speciation::SolidRule::report_only);
+      task.solids[*solver.system().solid(excess)] = speciation::SolidRule::in_excess;
+    }
+    return must(speciation::uncertainty(solver, task, must(solver.solve(task))));
+  };
+  const speciation::ChemicalSystem& system = chemistry.working().system();
+  const auto held = solved(chemistry.working(), view.pH, nullptr);
+  for (const bath::SpeciesView& species : view.species) {
+    CAPTURE(species.name);
+    CHECK(species.u_log10_activity.value() ==
+          Approx(held.ln_activity[*system.species_index(species.name)] / std::numbers::ln10)
+              .epsilon(1e-6)
+              .margin(1e-12));
+    if (species.name == "H^+") CHECK(*species.u_log10_activity < 1e-9);  // the pH was measured
+    if (species.name == "Ni^2+") CHECK(*species.u_log10_activity > 0);
+  }
+  const char* boric = "H3BO3";
+  const bath::Headroom& room = headroom(view, boric);
+  const std::size_t solid = *system.solid(room.solid);
+  CHECK(room.u_working_log10.value() > 0);
+  CHECK(room.u_working_log10.value() == Approx(held.saturation_index[solid]).epsilon(1e-6).margin(0));
+  CHECK(room.u_idle_kg.value() ==
+        Approx(solved(chemistry.idle(), std::nullopt, boric).solid_mol[solid] * 0.061833)
+            .epsilon(1e-4)
+            .margin(0));
+  CHECK_FALSE(room.u_forms_above_pH);
+  const bath::Headroom& hydroxide = headroom(view, "Ni(OH)2 (freshly precipitated)");
+  CHECK_FALSE(hydroxide.u_working_kg);
+  CHECK(hydroxide.u_forms_above_pH.value() ==
+        Approx(solved(chemistry.working(), hydroxide.forms_above_pH, nullptr)
+                   .saturation_index[*system.solid("Ni(OH)2 (freshly precipitated)")] /
+               2)
+            .epsilon(1e-6)
+            .margin(0));
+  CHECK_FALSE(must(chemistry.view(state)).headroom.front().u_working_log10);  // only on demand
 }

@@ -2,6 +2,7 @@
 #pragma once
 
 #include <bathwright/units/quantity.hpp>
+#include <optional>
 #include <string>
 #include <string_view>
 
@@ -15,5 +16,8 @@ namespace bathwright::sheets {
 
 /// To four significant digits; "" for NaN.
 [[nodiscard]] std::string figure(double value, int digits = 4);
+
+/// "± 0.05", a standard uncertainty to two decimals; "" where there is none.
+[[nodiscard]] std::string give_or_take(const std::optional<double>& u);
 
 }  // namespace bathwright::sheets

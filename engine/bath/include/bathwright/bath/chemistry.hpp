@@ -24,11 +24,14 @@ struct Headroom {
   /// Whether the idle form differs (NiSO4 hexahydrate hot, heptahydrate cold): only the covered temperature
   /// counts.
   bool covers_working = true, covers_idle = true;
+  /// Standard uncertainties of the above; only view_with_uncertainty (uncertainty.hpp) gives them.
+  std::optional<double> u_working_log10, u_idle_log10, u_working_kg, u_idle_kg, u_forms_above_pH;
 };
 
 struct SpeciesView {
   std::string name;
   double molality, gamma, log10_activity;
+  std::optional<double> u_log10_activity{};  ///< as those of Headroom
 };
 
 struct IndicatorValue {
