@@ -241,7 +241,8 @@ int main(int argc, char** argv) {
 
   std::vector<std::unique_ptr<Row>> rows;
   for (const BathSystem& bath : speciation::bath_systems())
-    for (const ModelKind kind : {ModelKind::davies, ModelKind::debye_huckel, ModelKind::pitzer}) {
+    for (const ModelKind kind : {ModelKind::davies, ModelKind::debye_huckel, ModelKind::sit,
+                               ModelKind::pitzer}) {
       const auto on = bench(bath, kind);
       for (const std::string_view from : {cold, warm, wild}) {
         const auto cases = std::make_shared<const std::vector<Case>>(make_cases(*on, from, count));

@@ -15,11 +15,27 @@ class Engine : public Method {
   bool solve_near_last(const speciation::Task& task) override {
     return bool(session_.solve_near_last(task, found_));
   }
-  Answer answer() const override { return {found_.molality, found_.water_kg, found_.solid_mol}; }
+  Answer answer() const override {
+    const speciation::Equilibrium& e = *seen_;
+    return {e.molality, e.water_kg, e.solid_mol};
+  }
+  void solve_all(std::span<const Sample> samples, const std::function<void(std::size_t)>& solved) override {
+    std::vector<speciation::Variant> variants;
+    for (const Sample& sample : samples) variants.push_back({sample.task.component_mol, sample.ln_K});
+    const auto done = session_.solve_variants(
+        samples.front().task, variants,
+        [&](std::size_t n, const Outcome& outcome, const speciation::Equilibrium& answer) {
+          seen_ = &answer;
+          if (outcome) solved(n);
+        });
+    (void)done;  // a failure leaves every sample without an answer
+    seen_ = &found_;
+  }
 
  private:
   speciation::Session session_;
   speciation::Equilibrium found_;
+  const speciation::Equilibrium* seen_ = &found_;
 };
 
 class General : public Method {
@@ -53,6 +69,13 @@ NamedMethod general(std::unique_ptr<RootFinder> (*finder)()) {
 }
 
 }  // namespace
+
+void Method::solve_all(std::span<const Sample> samples, const std::function<void(std::size_t)>& solved) {
+  for (std::size_t n = 0; n < samples.size(); ++n) {
+    use(samples[n].ln_K);
+    if (n == 0 ? solve(samples[n].task) : solve_near_last(samples[n].task)) solved(n);
+  }
+}
 
 const std::vector<NamedMethod>& methods() {
   static const std::vector<NamedMethod> all{

@@ -3,12 +3,18 @@
 
 #include <functional>
 #include <memory>
+#include <span>
 #include <string>
 #include <vector>
 
 #include "equations.hpp"
 
 namespace bathwright::benchmark {
+
+struct Sample {
+  speciation::Task task;
+  speciation::Constants ln_K;
+};
 
 class Method {
  public:
@@ -20,6 +26,11 @@ class Method {
   /// From the last answer, or from nothing where the last solve failed.
   virtual bool solve_near_last(const speciation::Task& task) = 0;
   [[nodiscard]] virtual Answer answer() const = 0;
+
+  /// Every sample, in order; `solved` is told each that has an answer(), while it stands. Unless a method
+  /// knows better, from each to the next.
+  virtual void solve_all(std::span<const Sample> samples,
+                         const std::function<void(std::size_t sample)>& solved);
 };
 
 struct NamedMethod {

@@ -30,11 +30,8 @@ SampledRun run_samples(const NamedMethod& method, const speciation::Solver& solv
     const double start = thread_seconds();
     Method& own = *methods[t];
     const std::size_t begin = samples.size() * t / threads, end = samples.size() * (t + 1) / threads;
-    for (std::size_t i = begin; i < end; ++i) {
-      own.use(samples[i].ln_K);
-      const bool solved = i == begin ? own.solve(samples[i].task) : own.solve_near_last(samples[i].task);
-      if (solved) answers[i] = own.answer();
-    }
+    own.solve_all(std::span(samples).subspan(begin, end - begin),
+                  [&](std::size_t n) { answers[begin + n] = own.answer(); });
     seconds[t] = thread_seconds() - start;
   };
   {

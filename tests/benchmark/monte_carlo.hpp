@@ -7,18 +7,13 @@
 
 namespace bathwright::benchmark {
 
-struct Sample {
-  speciation::Task task;
-  speciation::Constants ln_K;
-};
-
 struct SampledRun {
   double seconds = 0;  ///< processor time of the thread that needed most: the wall clock of a quiet machine
   std::size_t failures = 0;
   double worst_residual = 0;  ///< among the answers that count
 };
 
-/// Every thread has a method of its own and an equal share of the samples, and goes from each to the next.
+/// Every thread has a method of its own and an equal share of the samples.
 SampledRun run_samples(const NamedMethod& method, const speciation::Solver& solver,
                        const std::vector<Sample>& samples, std::size_t threads);
 
