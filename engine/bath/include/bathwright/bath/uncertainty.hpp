@@ -1,5 +1,5 @@
 // A tank's view with the standard uncertainty of what rests on constants and interactions. Not for: loops
-// (some ten milliseconds more than Chemistry::view); the errors of the analysis (analysis/).
+// (about 30 ms more than Chemistry::view); the errors of the analysis (analysis/).
 #pragma once
 
 #include <bathwright/bath/chemistry.hpp>
