@@ -54,7 +54,8 @@ LaneProblem::LaneProblem(const Workspace& w)
       x(total.size()),
       ln_m(ln_K.size()),
       ln_gamma(w.kinds()),
-      phase_mol(w.phases.size()) {}
+      phase_mol(w.phases.size()),
+      active(w.phases.size()) {}
 
 void LaneProblem::set_lane(std::size_t lane, const Workspace& w) {
   for (std::size_t i = 0; i < total.size(); ++i) {
@@ -68,6 +69,7 @@ void LaneProblem::set_lane(std::size_t lane, const Workspace& w) {
   for (std::size_t k = 0; k < phase_ln_K.size(); ++k) {
     phase_ln_K[k][lane] = w.phases[k].ln_K;
     phase_mol[k][lane] = w.phases[k].mol;
+    active[k][lane] = w.phases[k].active ? 1 : 0;
   }
   total_water[lane] = w.total_water;
   ln_aw[lane] = w.ln_aw;
@@ -78,7 +80,10 @@ void LaneProblem::copy_state(std::size_t lane, Workspace& w) const {
   for (std::size_t i = 0; i < x.size(); ++i) w.x(static_cast<Index>(i)) = x[i][lane];
   for (std::size_t j = 0; j < ln_m.size(); ++j) w.ln_m(static_cast<Index>(j)) = ln_m[j][lane];
   for (std::size_t k = 0; k < ln_gamma.size(); ++k) w.ln_gamma(static_cast<Index>(k)) = ln_gamma[k][lane];
-  for (std::size_t k = 0; k < phase_mol.size(); ++k) w.phases[k].mol = phase_mol[k][lane];
+  for (std::size_t k = 0; k < phase_mol.size(); ++k) {
+    w.phases[k].active = active[k][lane] != 0;
+    w.phases[k].mol = w.phases[k].active ? phase_mol[k][lane] : 0;
+  }
   w.ln_aw = ln_aw[lane];
   w.water_kg = water_kg[lane];
 }
@@ -98,6 +103,34 @@ LaneTables::LaneTables(std::size_t components, std::size_t species, std::size_t 
       m(species),
       defect(species) {}
 
+bool change_phases(const Workspace& w, LaneProblem& p, std::size_t lane) {
+  constexpr double saturated = 1e-9;  // ln units
+  std::size_t leaving = w.phases.size(), entering = w.phases.size();
+  double least_mol = 0, largest = saturated;
+  for (std::size_t k = 0; k < w.phases.size(); ++k) {
+    const Phase& phase = w.phases[k];
+    if (phase.kind != Phase::Kind::precipitate) continue;
+    if (p.active[k][lane] != 0) {
+      if (p.phase_mol[k][lane] < least_mol) leaving = k, least_mol = p.phase_mol[k][lane];
+      continue;
+    }
+    double above = phase.water * p.ln_aw[lane] - p.phase_ln_K[k][lane];
+    for (std::size_t i = 0; i < p.x.size(); ++i)
+      above += phase.condition(static_cast<Index>(i)) * p.x[i][lane];
+    if (above > largest) entering = k, largest = above;
+  }
+  if (leaving < w.phases.size()) {
+    p.active[leaving][lane] = 0;
+    p.phase_mol[leaving][lane] = 0;
+  } else if (entering < w.phases.size()) {
+    p.active[entering][lane] = 1;
+    p.phase_mol[entering][lane] = 0;
+  } else {
+    return false;
+  }
+  return true;
+}
+
 BATHWRIGHT_LANES_CLONES
 std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t) {
   constexpr int most = 12;
@@ -108,7 +141,12 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
   std::array<std::size_t, most_rows> active{};
   std::size_t held = 0;
   for (std::size_t k = 0; k < w.phases.size(); ++k)
-    if (w.phases[k].active) active[held++] = k;
+    for (std::size_t lane = 0; lane < lanes; ++lane)
+      if (p.active[k][lane] != 0) {
+        if (held == active.size()) return arrived;
+        active[held++] = k;
+        break;
+      }
   const std::size_t size = n + 1 + held, wide = size + 1;
 
   Lanes in_kind[activity::max_solutes];
@@ -172,6 +210,7 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
         off[k] -= phase.condition(at) * p.x[i];
         open[i] -= phase.supply(at) * p.phase_mol[active[k]];
       }
+      off[k] *= p.active[active[k]];
       open[n] -= phase.supply_water * p.phase_mol[active[k]];
       Lanes size_of = off[k];
       magnitude(size_of);
@@ -264,9 +303,12 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
     for (std::size_t k = 0; k < held; ++k) {
       const Phase& phase = w.phases[active[k]];
       Lanes* row = K + (n + 1 + k) * wide;
+      // Where the phase is not there, its condition is that there is none of it.
+      const Lanes here = p.active[active[k]];
       for (std::size_t i = 0; i < n; ++i)
-        row[i] = phase.condition(static_cast<Index>(i)) + phase.water * (water_weight * formed[i]);
-      row[size] = off[k] - phase.water * constant;
+        row[i] = here * (phase.condition(static_cast<Index>(i)) + phase.water * (water_weight * formed[i]));
+      row[n + 1 + k] = 1 - here;
+      row[size] = off[k] - here * phase.water * constant;
     }
     if (!eliminate(K, size, wide)) return arrived;
 

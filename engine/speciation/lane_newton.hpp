@@ -1,4 +1,4 @@
-// The coupled Newton of coupled_newton.hpp for eight variants of a problem at once, with one set of phases.
+// The coupled Newton of coupled_newton.hpp for eight variants of a problem at once, each with its own phases.
 #pragma once
 
 #include <array>
@@ -8,11 +8,12 @@
 
 namespace bathwright::speciation {
 
-/// Eight problems over the basis and the active phases of one workspace, and where their solutions stand.
+/// Eight problems over the basis of one workspace, and where their solutions stand.
 struct LaneProblem {
   LaneArray total, ln_K, phase_ln_K;  ///< per component; species; phase of the workspace
   Lanes total_water;
   LaneArray x, ln_m, ln_gamma, phase_mol;  ///< per component; species; kind; phase
+  LaneArray active;                        ///< per phase: 1 where its condition holds, else 0
   Lanes ln_aw, water_kg;
 
   explicit LaneProblem(const Workspace& w);
@@ -30,6 +31,10 @@ struct LaneTables {
  private:
   LaneTables(std::size_t components, std::size_t species, std::size_t kinds_count, std::size_t phases);
 };
+
+/// One change of a lane's phases, as after coupled_newton: the most negative precipitate leaves, else the
+/// most supersaturated solid enters. False where there is nothing to change.
+bool change_phases(const Workspace& w, LaneProblem& p, std::size_t lane);
 
 /// Takes the lanes to the tolerance of solve_coupled. Returns which arrived.
 std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t);

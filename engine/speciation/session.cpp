@@ -314,6 +314,7 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
   LaneTables tables(w);
   Task varied = task;
   Session alone(*s.solver);  // for those that leave the lanes
+  constexpr int most_changes = 8;
   for (std::size_t first = 0; first < variants.size(); first += lanes) {
     const std::size_t count = std::min(lanes, variants.size() - first);
     std::array<bool, lanes> in_lane{};
@@ -325,25 +326,23 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
       if (!in_lane[lane]) w.reload(task, own);
       problem.set_lane(lane, w);
     }
-    const std::array<bool, lanes> arrived = lane_newton(w, problem, tables);
+    std::array<bool, lanes> arrived{};
+    bool changed = true;
+    for (int change = 0; change < most_changes && changed; ++change) {
+      arrived = lane_newton(w, problem, tables);
+      changed = false;
+      for (std::size_t lane = 0; lane < count; ++lane)
+        if (arrived[lane] && change_phases(w, problem, lane)) changed = true;
+    }
     for (std::size_t lane = 0; lane < count; ++lane) {
       const Variant& variant = variants[first + lane];
       varied.component_mol = variant.component_mol;
       s.ln_K = variant.ln_K;
       Outcome found = Done{};
-      const auto from_lane = [&] {
-        nominal.restore(w);
-        problem.copy_state(lane, w);
-      };
       bool settled = in_lane[lane] && arrived[lane];
       if (settled) {
-        from_lane();
+        problem.copy_state(lane, w);
         settled = static_cast<bool>(s.finish_with(varied, 0, answer));
-      }
-      if (!settled && in_lane[lane] && w.reload(varied, variant.ln_K)) {  // another set of phases, perhaps
-        int iterations = 0;
-        from_lane();
-        settled = finish(w, iterations) && s.finish_with(varied, iterations, answer);
       }
       if (!settled) {
         alone.ln_K() = variant.ln_K;

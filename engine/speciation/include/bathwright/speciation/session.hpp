@@ -37,7 +37,7 @@ class Session {
 
   /// Solves the task, then every variant of it, each checked like any other answer. Eight variants at a time
   /// share the steps of one coupled Newton from the answer to the task; those that this does not settle
-  /// (another set of phases, a long way) are solved by themselves. Fails as solve() does on the task; takes
+  /// (a long way off) are solved by themselves. Fails as solve() does on the task; takes
   /// storage for the eight.
   Outcome solve_variants(const Task& task, std::span<const Variant> variants, const VariantVisit& visit);
 
