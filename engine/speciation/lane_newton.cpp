@@ -132,18 +132,17 @@ bool change_phases(const Workspace& w, LaneProblem& p, std::size_t lane) {
 }
 
 BATHWRIGHT_LANES_CLONES
-std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t) {
+void lane_newton(Workspace& w, LaneProblem& p, LaneTables& t, std::array<bool, lanes>& arrived) {
   constexpr int most = 12;
   constexpr double longest_step = 2;
   const auto n = static_cast<std::size_t>(w.components()), count = static_cast<std::size_t>(w.count());
   const std::size_t kinds = w.kinds(), width = n + 2;
-  std::array<bool, lanes> arrived{};
   std::array<std::size_t, most_rows> active{};
   std::size_t held = 0;
   for (std::size_t k = 0; k < w.phases.size(); ++k)
     for (std::size_t lane = 0; lane < lanes; ++lane)
       if (p.active[k][lane] != 0) {
-        if (held == active.size()) return arrived;
+        if (held == active.size()) return;
         active[held++] = k;
         break;
       }
@@ -159,12 +158,27 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
     }
     Lanes sum{};
     for (std::size_t k = 0; k < kinds; ++k) sum += in_kind[k];
+    // A trace kind does not move the coefficients of others.
+    std::array<std::uint16_t, activity::max_solutes> abundant;
+    std::size_t several = 0;
+    for (std::size_t k = 0; k < kinds; ++k)
+      for (std::size_t lane = 0; lane < lanes; ++lane)
+        if (in_kind[k][lane] > 1e-5 * sum[lane]) {
+          abundant[several++] = static_cast<std::uint16_t>(k);
+          break;
+        }
     for (std::size_t lane = 0; lane < lanes; ++lane) {
+      if (arrived[lane]) {  // stands still; its slopes only have to be harmless
+        for (std::size_t k = 0; k < kinds * several; ++k) t.H[k][lane] = 0;
+        continue;
+      }
       std::array<double, activity::max_solutes> one, ln_gamma;
       for (std::size_t k = 0; k < kinds; ++k) one[k] = in_kind[k][lane];
       p.ln_aw[lane] = w.model().evaluate_kinds({one.data(), kinds}, {ln_gamma.data(), kinds}, w.derivative);
       for (std::size_t k = 0; k < kinds; ++k) p.ln_gamma[k][lane] = ln_gamma[k];
-      for (std::size_t k = 0; k < kinds * kinds; ++k) t.H[k][lane] = w.derivative[k];
+      for (std::size_t k = 0; k < kinds; ++k)
+        for (std::size_t r = 0; r < several; ++r)
+          t.H[k * several + r][lane] = w.derivative[k * kinds + abundant[r]];
     }
     // Sums over kinds, the defects of mass action, and what is there of everything.
     std::fill(t.U.begin(), t.U.end(), Lanes{});
@@ -223,10 +237,10 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
     }
     bool all = true;
     for (std::size_t lane = 0; lane < lanes; ++lane) {
-      arrived[lane] = step > 0 && residual[lane] < met && action[lane] < action_met;
+      arrived[lane] = arrived[lane] || (step > 0 && residual[lane] < met && action[lane] < action_met);
       all = all && arrived[lane];
     }
-    if (all) return arrived;
+    if (all) return;
 
     // Slopes: the species themselves, then what the kinds change.
     std::fill(t.X.begin(), t.X.end(), Lanes{});
@@ -239,23 +253,15 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
         for (const auto* other = w.begin(at); other != end; ++other) X[other->row] += weight * other->value;
       }
     }
-    std::array<std::uint16_t, activity::max_solutes> abundant;
-    std::size_t several = 0;
-    for (std::size_t k = 0; k < kinds; ++k)
-      for (std::size_t lane = 0; lane < lanes; ++lane)
-        if (in_kind[k][lane] > 1e-5 * sum[lane]) {
-          abundant[several++] = static_cast<std::uint16_t>(k);
-          break;
-        }
     const std::size_t row_length = several + width;
     for (std::size_t r = 0; r < several; ++r) {
       Lanes* row = &t.kinds[r * row_length];
       for (std::size_t c = 0; c < several; ++c)
-        row[c] = in_kind[abundant[r]] * t.H[abundant[r] * kinds + abundant[c]];
+        row[c] = in_kind[abundant[r]] * t.H[abundant[r] * several + c];
       row[r] += 1;
       std::copy_n(&t.U[abundant[r] * width], width, row + several);
     }
-    if (!eliminate(t.kinds.begin(), several, row_length)) return arrived;
+    if (!eliminate(t.kinds.begin(), several, row_length)) return;
     std::fill(t.gamma.begin(), t.gamma.end(), Lanes{});
     std::size_t next = 0;
     for (std::size_t k = 0; k < kinds; ++k) {
@@ -267,7 +273,7 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
         for (std::size_t c = 0; c < width; ++c) gamma[c] = (U[c] - moved[c]) * inverse;
       } else {
         for (std::size_t r = 0; r < several; ++r) {
-          const Lanes slope = t.H[k * kinds + abundant[r]];
+          const Lanes slope = t.H[k * several + r];
           const Lanes* moved = &t.kinds[r * row_length + several];
           for (std::size_t c = 0; c < width; ++c) gamma[c] += slope * moved[c];
         }
@@ -310,7 +316,7 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
       row[n + 1 + k] = 1 - here;
       row[size] = off[k] - here * phase.water * constant;
     }
-    if (!eliminate(K, size, wide)) return arrived;
+    if (!eliminate(K, size, wide)) return;
 
     Lanes move[most_rows + 2];
     Lanes d_ln_aw = constant;
@@ -338,7 +344,9 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
       magnitude(d);
       raise(longest, t.m[j] > abundant_from ? d : Lanes{});
     }
-    const Lanes fraction = longest > longest_step ? longest_step / longest : Lanes{} + 1.0;
+    Lanes fraction = longest > longest_step ? longest_step / longest : Lanes{} + 1.0;
+    for (std::size_t lane = 0; lane < lanes; ++lane)
+      if (arrived[lane]) fraction[lane] = 0;
     for (std::size_t i = 0; i < n; ++i) p.x[i] += fraction * move[i];
     Lanes growth = fraction * d_ln_water;
     exponential(growth);
@@ -349,7 +357,7 @@ std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t)
       mol += fraction * (K[(n + 1 + k) * wide + size] - mol);
     }
   }
-  return arrived;
+  return;
 }
 
 }  // namespace bathwright::speciation

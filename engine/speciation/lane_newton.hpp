@@ -36,7 +36,7 @@ struct LaneTables {
 /// most supersaturated solid enters. False where there is nothing to change.
 bool change_phases(const Workspace& w, LaneProblem& p, std::size_t lane);
 
-/// Takes the lanes to the tolerance of solve_coupled. Returns which arrived.
-std::array<bool, lanes> lane_newton(Workspace& w, LaneProblem& p, LaneTables& t);
+/// Takes the lanes that have not `arrived` to the tolerance of solve_coupled, and marks those that do.
+void lane_newton(Workspace& w, LaneProblem& p, LaneTables& t, std::array<bool, lanes>& arrived);
 
 }  // namespace bathwright::speciation

@@ -329,10 +329,13 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
     std::array<bool, lanes> arrived{};
     bool changed = true;
     for (int change = 0; change < most_changes && changed; ++change) {
-      arrived = lane_newton(w, problem, tables);
+      lane_newton(w, problem, tables, arrived);
       changed = false;
       for (std::size_t lane = 0; lane < count; ++lane)
-        if (arrived[lane] && change_phases(w, problem, lane)) changed = true;
+        if (arrived[lane] && change_phases(w, problem, lane)) {
+          arrived[lane] = false;
+          changed = true;
+        }
     }
     for (std::size_t lane = 0; lane < count; ++lane) {
       const Variant& variant = variants[first + lane];
