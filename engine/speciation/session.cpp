@@ -250,6 +250,7 @@ struct Session::Storage {
   Workspace workspace;
   Mark mark;
   bool solved = false;  ///< the workspace stands at an answer
+  Equilibrium other;    ///< a second answer to choose from
 
   explicit Storage(const Solver& s) : solver(&s), ln_K(s.ln_K()), workspace(s), mark(workspace) {}
 
@@ -270,11 +271,9 @@ struct Session::Storage {
     if (!cold.any()) return refusal(workspace, solver->system(), task);
     Outcome found = finish_with(task, iterations, answer);
     // Where the Gibbs energy curves downward there is another equilibrium: a sturdier route may find it.
-    if (found && !answer.stable && cold.by_approach()) {
-      const Outcome other = finish_with(task, iterations, answer);
-      if (other && answer.stable) return other;
-      if (cold.direct()) return finish_with(task, iterations, answer);
-    }
+    if (found && !answer.stable && cold.by_approach() && finish_with(task, iterations, other) && other.stable)
+      std::swap(answer, other);
+    solved = static_cast<bool>(found);
     return found;
   }
 };
