@@ -242,6 +242,15 @@ class ColdSolve {
   int& iterations_;
 };
 
+Equilibrium with_room_for(const ChemicalSystem& system) {
+  Equilibrium answer;
+  for (auto* values : {&answer.molality, &answer.ln_gamma, &answer.ln_activity})
+    values->reserve(system.species().size());
+  for (auto* values : {&answer.solid_mol, &answer.saturation_index}) values->reserve(system.solids().size());
+  for (auto* values : {&answer.gas_bar, &answer.gas_mol}) values->reserve(system.gases().size());
+  return answer;
+}
+
 }  // namespace
 
 struct Session::Storage {
@@ -252,7 +261,8 @@ struct Session::Storage {
   bool solved = false;  ///< the workspace stands at an answer
   Equilibrium other;    ///< a second answer to choose from
 
-  explicit Storage(const Solver& s) : solver(&s), ln_K(s.ln_K()), workspace(s), mark(workspace) {}
+  explicit Storage(const Solver& s)
+      : solver(&s), ln_K(s.ln_K()), workspace(s), mark(workspace), other(with_room_for(s.system())) {}
 
   Outcome finish_with(const Task& task, int iterations, Equilibrium& answer) {
     read_answer(workspace, *solver, ln_K, task, answer);
