@@ -333,7 +333,7 @@ void cold_start(Workspace& w) {
     return protons;
   };
   for (Phase& phase : w.phases) {
-    if (phase.kind != Phase::Kind::ph) continue;
+    if (phase.kind != Phase::Kind::ph || !phase.active) continue;
     // The acid that holds the pH brings its counter-ion: a few rounds settle how much.
     constexpr int rounds = 4;
     for (int round = 0; round < rounds; ++round) {
