@@ -153,7 +153,6 @@ bool Linearisation::solve_kinds(const SpeciesVector& in_kind) {
 bool solve_coupled(Workspace& w, int& iterations) {
   constexpr int most = 60;
   constexpr double longest_step = 2;  // ln units, of an abundant species
-  constexpr double met = 3e-14, action_met = 2e-13;
   const auto n = static_cast<std::size_t>(w.components());
   const Index count = w.count();
 
@@ -209,7 +208,7 @@ bool solve_coupled(Workspace& w, int& iterations) {
     }
     for (std::size_t i = 0; i <= n; ++i) residual = std::max(residual, std::abs(open[i]) / scale[i]);
     // Done at rounding level, or where rounding no longer lets it improve.
-    const double worst = std::max(residual / met, defect.cwiseAbs().maxCoeff() / action_met);
+    const double worst = std::max(residual / balance_met, defect.cwiseAbs().maxCoeff() / action_met);
     if (step > 0 && (worst < 1 || (worst < 50 && worst > last_worst / 2))) return true;
     last_worst = worst;
 

@@ -4,10 +4,10 @@
 #include <cmath>
 #include <limits>
 
+#include "coupled_newton.hpp"
+
 namespace bathwright::speciation {
 namespace {
-
-constexpr double met = 3e-14, action_met = 2e-13;  // as in coupled_newton.cpp
 
 double least(const Lanes& value) {
   double low = std::numeric_limits<double>::infinity();
@@ -104,7 +104,6 @@ LaneTables::LaneTables(std::size_t components, std::size_t species, std::size_t 
       defect(species) {}
 
 bool change_phases(const Workspace& w, LaneProblem& p, std::size_t lane) {
-  constexpr double saturated = 1e-9;  // ln units
   std::size_t leaving = w.phases.size(), entering = w.phases.size();
   double least_mol = 0, largest = saturated;
   for (std::size_t k = 0; k < w.phases.size(); ++k) {
@@ -237,7 +236,8 @@ void lane_newton(Workspace& w, LaneProblem& p, LaneTables& t, std::array<bool, l
     }
     bool all = true;
     for (std::size_t lane = 0; lane < lanes; ++lane) {
-      arrived[lane] = arrived[lane] || (step > 0 && residual[lane] < met && action[lane] < action_met);
+      arrived[lane] =
+          arrived[lane] || (step > 0 && residual[lane] < balance_met && action[lane] < action_met);
       all = all && arrived[lane];
     }
     if (all) return;

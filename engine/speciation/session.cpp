@@ -14,8 +14,6 @@
 namespace bathwright::speciation {
 namespace {
 
-constexpr double saturated = 1e-9;  // ln units
-
 /// Moves the coefficients a share of the way to those of the present composition; the largest change, ln
 /// units, of a kind that is not a trace.
 double move_coefficients(Workspace& w, double share) {
@@ -281,9 +279,11 @@ struct Session::Storage {
     if (!cold.any()) return refusal(workspace, solver->system(), task);
     Outcome found = finish_with(task, iterations, answer);
     // Where the Gibbs energy curves downward there is another equilibrium: a sturdier route may find it.
-    if (found && !answer.stable && cold.by_approach() && finish_with(task, iterations, other) && other.stable)
-      std::swap(answer, other);
-    solved = static_cast<bool>(found);
+    if (found && !answer.stable) {
+      solved = false;  // until the workspace stands at an answer again
+      if (cold.by_approach() && finish_with(task, iterations, other) && other.stable)
+        std::swap(answer, other);
+    }
     return found;
   }
 };
