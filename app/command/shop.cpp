@@ -25,10 +25,16 @@ Problem unknown_bath_type(const bath::Tank& tank, const plugin_host::BathTypes& 
 }
 
 Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
-  std::vector<std::string> known{"pH"};
+  std::vector<std::string> known;
+  if (type.acid_by_pH()) known.emplace_back("pH");
   for (const auto& quantity : type.quantities) known.push_back(quantity.id);
   Problems problems;
   for (const bath::Aim& aim : tank.aims) {
+    if (aim.quantity == "pH" && !type.acid_by_pH()) {
+      problems.push_back({Fault::bad_input, tank.file + ": target: pH", "cannot be held in " + type.name,
+                          "an aim for its acid or alkali, which is analysed", ""});
+      continue;
+    }
     if (aim.quantity == "pH" || type.quantity(aim.quantity)) continue;
     const auto close = nearest(aim.quantity, known);
     problems.push_back({Fault::bad_input, tank.file + ": target: " + aim.quantity,
@@ -68,10 +74,11 @@ Result<bath::TankState> state_at_aims(const Shop& shop) {
   for (const bath::Aim& aim : shop.tank.aims)
     if (aim.quantity != "pH") g_per_L[aim.quantity] = aim.aim;
   const bath::Aim* pH = shop.tank.aim("pH");
-  if (!pH)
+  if (!pH && shop.type().acid_by_pH())
     return Problem{Fault::bad_input, shop.tank.file + ": target", "has no pH", "an aim for pH",
                    "Add one, or give readings."};
-  return shop.chemistry.state_from(g_per_L, pH->aim, shop.tank.working_volume, shop.tank.temperature);
+  return shop.chemistry.state_from(g_per_L, pH ? std::optional(pH->aim) : std::nullopt,
+                                   shop.tank.working_volume, shop.tank.temperature);
 }
 
 void add_tank_and_readings(CLI::App& verb, Context& context, Action& action,

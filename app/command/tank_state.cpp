@@ -83,11 +83,16 @@ Result<StartingState> starting_state(const Context& context, const Shop& shop,
   }
   auto state = state_at_aims(shop);
   if (!state) return state.problems();
-  return StartingState{*std::move(state),
-                       {"as at its aims and at the mark; no readings and no log were given",
-                        shop.tank.temperature,
-                        shop.tank.aim("pH")->aim,
-                        {}}};
+  const bath::Aim* aim = shop.tank.aim("pH");
+  double pH = aim ? aim->aim : 0;
+  if (!aim) {
+    const auto solved = shop.chemistry.speciate(*state);
+    if (!solved) return solved.problems();
+    pH = solved->pH();
+  }
+  return StartingState{
+      *std::move(state),
+      {"as at its aims and at the mark; no readings and no log were given", shop.tank.temperature, pH, {}}};
 }
 
 }  // namespace bathwright::command

@@ -59,6 +59,7 @@ class Evaluation {
 
   [[nodiscard]] const std::string& counter_ion() const;
   void add_result(const bath::Quantity& quantity);
+  void compare_pH();
 
   const Readings& readings_;
   const bath::Tank& tank_;
@@ -120,10 +121,10 @@ void Evaluation::find_temperature() {
 void Evaluation::find_pH() {
   if (readings_.pH) {
     analysis_.pH = *readings_.pH;
-  } else if (book_ && book_->pH) {
+  } else if (type_.acid_by_pH() && book_ && book_->pH) {
     analysis_.pH = *book_->pH;
     note(fmt::format("no pH given: {} taken from {}", units::significant(analysis_.pH), book_->from));
-  } else {
+  } else if (type_.acid_by_pH()) {
     refuse("pH", "no pH is given and the book has none", "", "Measure the pH and enter it.");
     return;
   }
@@ -236,7 +237,8 @@ void Evaluation::add_result(const bath::Quantity& quantity) {
   const auto direct = std::ranges::find(used_, &quantity, &Finding::quantity);
   std::string how = direct != used_.end() ? direct->how : worked_out_from(quantity);
   if (direct == used_.end() && level->mol_per_L == 0) how = "not analysed, taken as 0";
-  if (level->from == Origin::electroneutrality) how = "what balances the charges at this pH";
+  if (level->from == Origin::electroneutrality)
+    how = type_.acid_by_pH() ? "what balances the charges at this pH" : "what balances the charges";
   analysis_.results.push_back({quantity.id,
                                {level->mol_per_L * molar_mass},
                                {level->u_mol_per_L * molar_mass},
@@ -260,12 +262,28 @@ void Evaluation::close_with_state() {
     return;
   }
   analysis_.state = *std::move(state);
+  if (!type_.acid_by_pH()) compare_pH();
   const std::string& counter = counter_ion();
   const auto& components = chemistry_.components();
   const auto index = static_cast<std::size_t>(std::ranges::find(components, counter) - components.begin());
   levels_.close_charge(counter, analysis_.state.component_mol[index] / analysis_.volume.v);
   for (const bath::Quantity& quantity : type_.quantities) {
     if (quantity.counts.contains(counter)) add_result(quantity);
+  }
+}
+
+// Where acid or alkali is analysed the pH follows; what an electrode shows there is worth a look, no more.
+void Evaluation::compare_pH() {
+  const auto solved = chemistry_.speciate(analysis_.state);
+  if (!solved) return;
+  constexpr double noticeable = 0.3;
+  if (!readings_.pH) {
+    analysis_.pH = solved->pH();
+  } else if (std::abs(*readings_.pH - solved->pH()) > noticeable) {
+    note(
+        fmt::format("pH {} read, but {} follows from the acid and alkali analysed: electrodes err in strong "
+                    "acid and alkali; it was not used",
+                    units::significant(*readings_.pH, 3), units::significant(solved->pH(), 3)));
   }
 }
 

@@ -9,4 +9,9 @@ const Quantity* BathType::quantity(std::string_view wanted) const {
   return found == quantities.end() ? nullptr : &*found;
 }
 
+bool BathType::acid_by_pH() const {
+  return std::any_of(components.begin(), components.end(),
+                     [](const Component& c) { return c.found_by == FoundBy::pH; });
+}
+
 }  // namespace bathwright::bath

@@ -23,14 +23,15 @@ struct Chemistry::Prepared {
   matter::SolutionDensity density;
   std::vector<std::vector<double>> quantity_counts;  ///< per quantity, over the components
   std::vector<std::size_t> watched;                  ///< positions in the system's solids
-  std::size_t counter_ion;                           ///< component found by charge
+  std::size_t by_charge;                             ///< component found by charge
+  std::size_t counter_ion;                           ///< see Chemistry::counter_ion
 };
 
 namespace {
 
 constexpr activity::ModelKind model_for(activity::Convention convention) {
   return convention == activity::Convention::interaction ? activity::ModelKind::pitzer
-                                                         : activity::ModelKind::davies;
+                                                         : activity::ModelKind::sit;
 }
 
 Task task_for(const TankState& state) {
@@ -66,6 +67,13 @@ double onset_pH(const Solver& solver, const TankState& state, const Equilibrium&
   return pH;
 }
 
+/// The first component that carries charge and is not H^+.
+std::size_t first_ion(const speciation::ChemicalSystem& system) {
+  for (std::size_t i = 1; i < system.components().size(); ++i)
+    if (system.species()[i].charge != 0) return i;
+  return 0;
+}
+
 }  // namespace
 
 Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Celsius idle) {
@@ -81,7 +89,8 @@ Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Cels
   within("idle_temperature", idle, 0, type.max_C);  // cold, a tank only has to be computed, not worked
   if (!problems.empty()) return problems;
 
-  auto equilibria = speciation::Equilibria::built_in(type.convention).with(type.own_species, type.own_solids);
+  auto equilibria = speciation::Equilibria::built_in(type.convention, type.sets.zinc)
+                        .with(type.own_species, type.own_solids);
   if (!equilibria) return equilibria.problems();
   std::vector<std::string> names;
   for (const Component& component : type.components) names.push_back(component.species);
@@ -89,9 +98,9 @@ Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Cels
   if (!system) return system.problems();
   auto shared = std::make_shared<const speciation::ChemicalSystem>(*std::move(system));
   const auto kind = model_for(type.convention);
-  auto at_work = Solver::prepare(shared, kind, working, type.acid_set);
+  auto at_work = Solver::prepare(shared, kind, working, type.sets.acid);
   if (!at_work) return at_work.problems();
-  auto at_rest = Solver::prepare(shared, kind, idle, type.acid_set);
+  auto at_rest = Solver::prepare(shared, kind, idle, type.sets.acid);
   if (!at_rest) return at_rest.problems();
   auto density = matter::SolutionDensity::for_species(shared->components());
   if (!density) return density.problems();
@@ -123,23 +132,24 @@ Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Cels
                         "watches " + solid.name + ", which cannot form from its components", "",
                         close ? "Did you mean " + *close + "?" : ""});
   }
-  std::optional<std::size_t> counter_ion;
+  std::optional<std::size_t> by_charge;
   for (const Component& component : type.components)
-    if (component.found_by == FoundBy::charge) counter_ion = shared->component(component.species);
-  if (!counter_ion)
-    problems.push_back({Fault::inconsistent_data, type.id, "no component is found by charge",
-                        "exactly one counter-ion", ""});
+    if (component.found_by == FoundBy::charge) by_charge = shared->component(component.species);
+  if (!by_charge)
+    problems.push_back(
+        {Fault::inconsistent_data, type.id, "no component is found by charge", "exactly one", ""});
   if (!problems.empty()) return problems;
 
   Chemistry chemistry;
-  chemistry.prepared_ = std::make_shared<const Prepared>(
-      Prepared{type, shared, *std::move(equilibria), *std::move(at_work), *std::move(at_rest),
-               *std::move(density), std::move(counts), std::move(watched), *counter_ion});
+  chemistry.prepared_ = std::make_shared<const Prepared>(Prepared{
+      type, shared, *std::move(equilibria), *std::move(at_work), *std::move(at_rest), *std::move(density),
+      std::move(counts), std::move(watched), *by_charge, *by_charge == 0 ? first_ion(*shared) : *by_charge});
   return chemistry;
 }
 
 const BathType& Chemistry::type() const { return prepared_->type; }
 const std::vector<std::string>& Chemistry::components() const { return prepared_->system->components(); }
+std::size_t Chemistry::found_by_charge() const { return prepared_->by_charge; }
 std::size_t Chemistry::counter_ion() const { return prepared_->counter_ion; }
 const Solver& Chemistry::working() const { return prepared_->working; }
 const Solver& Chemistry::idle() const { return prepared_->idle; }
@@ -204,6 +214,8 @@ TankView Chemistry::view_of(const TankState& state, const Equilibrium& now, cons
     room.covers_idle = p.idle.covers(k);
     view.headroom.push_back(std::move(room));
   }
+  for (std::size_t g = 0; g < p.system->gases().size(); ++g)
+    if (now.gas_bar[g] > 0) view.gases.push_back({p.system->gases()[g].name, now.gas_bar[g]});
   return view;
 }
 
@@ -259,14 +271,19 @@ Result<TankView> Chemistry::view(const TankState& state) const {
   return view;
 }
 
-Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_per_L, double pH,
-                                        units::Litres volume, Celsius temperature) const {
+Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_per_L,
+                                        std::optional<double> pH, units::Litres volume,
+                                        Celsius temperature) const {
   const Prepared& p = *prepared_;
   const std::size_t n = components().size();
   Problems problems;
   if (!(volume.v > 0))
     problems.push_back({Fault::bad_input, "volume", std::to_string(volume.v) + " L", "more than 0", ""});
-  if (!(pH > -2 && pH < 16)) problems.push_back({Fault::bad_input, "pH", std::to_string(pH), "-2 to 16", ""});
+  const bool by_pH = p.type.acid_by_pH();
+  if (by_pH && !pH)
+    problems.push_back({Fault::bad_input, "pH", "is not given", "-2 to 16", "Measure it."});
+  else if (by_pH && !(*pH > -2 && *pH < 16))
+    problems.push_back({Fault::bad_input, "pH", std::to_string(*pH), "-2 to 16", ""});
 
   // Levels are linear in the totals of the components that are analysed: one row per level given.
   std::vector<const Quantity*> given;
@@ -276,7 +293,7 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
       problems.push_back({Fault::bad_input, id, "is not a quantity of " + p.type.name, "", ""});
     else if (!std::isfinite(level) || level < 0)
       problems.push_back({Fault::bad_input, id, std::to_string(level) + " g/L", "0 g/L or more", ""});
-    else if (!quantity->counts.contains(components()[p.counter_ion]))
+    else if (!quantity->counts.contains(components()[p.by_charge]))
       given.push_back(quantity);
   }
   if (!problems.empty()) return problems;
@@ -308,7 +325,7 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
       const double rounding = 1e-12 * mol.cwiseAbs().maxCoeff();
       if (known)
         state.component_mol[static_cast<std::size_t>(i)] = std::abs(found(i)) <= rounding ? 0 : found(i);
-      if (known && found(i) < -rounding)
+      if (known && found(i) < -rounding && i != 0)  // a total of H^+ below zero is alkali
         problems.push_back({Fault::bad_input, component.species, "the levels given make its amount negative",
                             "levels that can be together", "Check the titrations."});
     }
@@ -317,26 +334,19 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
   }
   if (!problems.empty()) return problems;
 
-  double charge = 0;
-  for (std::size_t i = 1; i < n; ++i)
-    if (i != p.counter_ion) charge += p.system->species()[i].charge * state.component_mol[i];
-  const int counter_charge = p.system->species()[p.counter_ion].charge;
-  const double counter = -charge / counter_charge;
-  if (counter < 0)
-    return Problem{Fault::bad_input, components()[p.counter_ion],
-                   "the levels leave " + std::to_string(counter / volume.v) + " mol/L for the counter-ion",
+  double charge = 0;  // of all but what is found by charge; H^+ that follows from the pH comes later
+  for (std::size_t i = 0; i < n; ++i)
+    if (i != p.by_charge) charge += p.system->species()[i].charge * state.component_mol[i];
+  const int balancing_charge = p.system->species()[p.by_charge].charge;
+  const double balancing = -charge / balancing_charge;
+  if (balancing < 0 && p.by_charge != 0)
+    return Problem{Fault::bad_input, components()[p.by_charge],
+                   "the levels leave " + std::to_string(balancing / volume.v) + " mol/L for the counter-ion",
                    "0 or more",
                    "One of the other levels is wrong: check the ions that carry the same charge as it."};
-
-  auto solver = std::abs(temperature.v - working_temperature().v) < 1e-9
-                    ? Result<Solver>(p.working)
-                    : Solver::prepare(p.system, p.working.model().kind(), temperature, p.type.acid_set);
-  if (!solver) return solver.problems();
-  double acid = 0;
-  for (int round = 0; round < 20; ++round) {
-    state.component_mol[0] = acid;
-    state.component_mol[p.counter_ion] = counter - acid / counter_charge;
-    if (state.water_kg == 0) state.water_kg = volume.v * 0.9;
+  state.component_mol[p.by_charge] = balancing;
+  state.water_kg = volume.v * 0.9;
+  const auto fill_up = [&]() -> Outcome {
     for (int step = 0; step < 50; ++step) {
       const double gap = volume.v - volume_L(state);
       state.water_kg += gap;
@@ -346,18 +356,36 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
                        "concentrations that can be dissolved", ""};
       if (std::abs(gap) < 1e-12 * volume.v) break;
     }
+    return Done{};
+  };
+  if (!by_pH) {
+    if (Outcome filled = fill_up(); !filled) return filled.problems();
+    return state;
+  }
+
+  auto solver = std::abs(temperature.v - working_temperature().v) < 1e-9
+                    ? Result<Solver>(p.working)
+                    : p.working.at_temperature(temperature);
+  if (!solver) return solver.problems();
+  double acid = 0;
+  const auto with_acid = [&] {
+    state.component_mol[0] = acid;
+    state.component_mol[p.by_charge] = balancing - acid / balancing_charge;
+  };
+  for (int round = 0; round < 20; ++round) {
+    with_acid();
+    if (Outcome filled = fill_up(); !filled) return filled.problems();
     Task task = task_for(state);
     task.component_mol[0] = 0;
-    task.component_mol[p.counter_ion] = counter;
-    task.pH = speciation::HeldPh{pH, p.counter_ion};
+    task.component_mol[p.by_charge] = balancing;
+    task.pH = speciation::HeldPh{*pH, p.by_charge};
     const auto held = solver->solve(task);
     if (!held) return held.problems();
     const bool settled = std::abs(held->held_ph_mol - acid) <= 1e-10 * volume.v;
     acid = held->held_ph_mol;
     if (settled) break;
   }
-  state.component_mol[0] = acid;
-  state.component_mol[p.counter_ion] = counter - acid / counter_charge;
+  with_acid();
   return state;
 }
 

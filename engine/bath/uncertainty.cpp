@@ -32,10 +32,13 @@ std::optional<Uncertainty> at_pH(const Solver& solver, const TankState& state, d
   return uncertainty_of(solver, task);
 }
 
-/// At the pH the tank has at the solver's temperature.
-std::optional<Uncertainty> as_it_is(const Solver& solver, const TankState& state, std::size_t counter_ion) {
+/// As analysed: at the pH the tank has at the solver's temperature where that was measured, else of its
+/// amounts.
+std::optional<Uncertainty> as_it_is(const Chemistry& chemistry, const Solver& solver,
+                                    const TankState& state) {
+  if (!chemistry.type().acid_by_pH()) return uncertainty_of(solver, task_for(state));
   const auto now = solver.solve(task_for(state));
-  return now ? at_pH(solver, state, now->pH(), counter_ion) : std::nullopt;
+  return now ? at_pH(solver, state, now->pH(), chemistry.counter_ion()) : std::nullopt;
 }
 
 /// Of the mol of a solid that would still dissolve or would crystallise.
@@ -72,11 +75,12 @@ Result<TankView> view_with_uncertainty(const Chemistry& chemistry, const TankSta
   if (!found) return found;
   TankView view = *std::move(found);
   const speciation::ChemicalSystem& system = chemistry.working().system();
-  const auto now = as_it_is(chemistry.working(), state, chemistry.counter_ion());
-  const auto cold = as_it_is(chemistry.idle(), state, chemistry.counter_ion());
+  const auto now = as_it_is(chemistry, chemistry.working(), state);
+  const auto cold = as_it_is(chemistry, chemistry.idle(), state);
   for (SpeciesView& species : view.species)
     if (now)
       species.u_log10_activity = now->ln_activity[*system.species_index(species.name)] / std::numbers::ln10;
+  if (now && !chemistry.type().acid_by_pH()) view.u_pH = now->pH;
   for (Headroom& room : view.headroom) {
     const std::size_t solid = *system.solid(room.solid);
     if (now && room.covers_working) room.u_working_log10 = now->saturation_index[solid];

@@ -5,7 +5,7 @@
 #include <cmath>
 #include <cstring>
 
-#include "indicator.hpp"
+#include "plugin_calls.hpp"
 #include "rows.hpp"
 #include "text.hpp"
 #include "type_checks.hpp"
@@ -22,14 +22,14 @@ constexpr bw_addition_rule open_rule = {nullptr, nullptr, unknown, unknown, 0, 0
 constexpr bw_own_species unknown_species = {nullptr, nullptr, unknown_datum, unknown_datum, unknown_datum, 0};
 constexpr bw_own_solid unknown_solid = {
     nullptr, nullptr, nullptr, nullptr, unknown_datum, unknown_datum, unknown_datum, unknown, unknown, 0, 0};
-constexpr bw_use no_use = {nullptr, nullptr,       nullptr,       0, 0, nullptr,
-                           unknown, unknown_datum, unknown_datum, 0, 0};
+constexpr bw_use no_use = {nullptr,       nullptr,       nullptr, 0, 0,       nullptr, unknown,
+                           unknown_datum, unknown_datum, 0,       0, unknown, nullptr};
 
 /// Lengths in version 1.0: what an interface of major version 1 can rely on.
-constexpr std::size_t smallest_type = 272;
+constexpr std::size_t smallest_type = 296;
 constexpr RowLimits source_rows{24, 1}, component_rows{16, 1}, quantity_rows{48, 1},
     own_species_rows{96, 0, 256}, own_solid_rows{128}, watched_solid_rows{16}, window_rows{56},
-    addition_rows{48}, caution_rows{24}, indicator_rows{40}, use_rows{104};
+    addition_rows{48}, caution_rows{24}, indicator_rows{40}, use_rows{120}, incompatibility_rows{24};
 
 enum class Length : std::size_t { usual = 400, generous = 1000 };  ///< bytes; rule R3
 enum class Need : bool { optional, required };
@@ -52,7 +52,8 @@ class Reader {
     read_additions();
     read_cautions();
     read_indicators();
-    check_uses();
+    read_uses();
+    read_incompatibilities();
     check_references(out_, report_);
     check_chemistry(out_, report_);
     check_safety(out_, report_);
@@ -163,8 +164,12 @@ class Reader {
     out_.convention = in_.convention == BW_ASSOCIATION ? activity::Convention::association
                                                        : activity::Convention::interaction;
     code({"", 0, "acid_set"}, in_.acid_set, BW_MUCH_CHLORIDE);
-    out_.acid_set =
+    out_.sets.acid =
         in_.acid_set == BW_MUCH_CHLORIDE ? activity::AcidSet::chloride : activity::AcidSet::sulfate;
+    if (in_.zinc_set != 0) code({"", 0, "zinc_set"}, in_.zinc_set, BW_ZINC_IN_ALKALI);
+    out_.sets.zinc = in_.zinc_set == BW_ZINC_IN_CHLORIDE ? activity::ZincSet::chloride
+                     : in_.zinc_set == BW_ZINC_IN_ALKALI ? activity::ZincSet::alkaline
+                                                         : activity::ZincSet::dilute;
   }
 
   void read_sources() {
@@ -230,10 +235,11 @@ class Reader {
       const std::size_t n = out_.own_species.size() + 1;
       speciation::StatedSpecies species;
       species.name = text({table, n, "name"}, row.name, Need::required);
-      species.reaction = text({table, n, "reaction"}, row.reaction, Need::required);
+      species.reaction = text({table, n, "reaction"}, row.reaction, Need::optional);
       species.source = citation({table, n, "log10_K"}, row.log10_K);
       species.where = where(table, n);
-      species.constant = constant(table, n, row.log10_K, row.dH_kJ_per_mol, row.dCp_J_per_mol_K);
+      if (!species.reaction.empty())
+        species.constant = constant(table, n, row.log10_K, row.dH_kJ_per_mol, row.dCp_J_per_mol_K);
       species.measured_at_ionic_strength =
           number({table, n, "medium_mol_per_kg"}, row.medium_mol_per_kg, 0, 20);
       formula({table, n, "name"}, species.name);
@@ -330,27 +336,55 @@ class Reader {
     }
   }
 
-  /// Nothing of the engine asks yet what current does to a bath; what a plugin says of it must be sound all
-  /// the same.
-  void check_uses() {
-    std::size_t n = 0;
-    for (const bw_use& row : copy_rows<bw_use>("uses", in_.uses, use_rows, report_, no_use)) {
-      ++n;
-      text({"uses", n, "id"}, row.id, Need::required);
-      text({"uses", n, "label"}, row.label, Need::required);
-      code({"uses", n, "counted_in"}, row.counted_in, BW_PER_HOUR);
-      source({"uses", n, "source"}, row.source);
-      for (const auto& [id, grams] : terms({"uses", n, "effects"}, row.effects, row.effect_count))
-        quantity_of({"uses", n, "effects"}, id);
-      const std::string metal = text({"uses", n, "deposits"}, row.deposits, Need::optional);
-      if (metal.empty()) continue;
-      quantity_of({"uses", n, "deposits"}, metal);
-      number({"uses", n, "electrons"}, row.electrons, 1, 8);
-      for (const auto& [field, efficiency] : {std::pair{"cathode_efficiency", &row.cathode_efficiency},
-                                              {"anode_efficiency", &row.anode_efficiency}}) {
-        number({"uses", n, field}, efficiency->value, 0, 1);
-        source({"uses", n, field}, efficiency->source);
+  void read_uses() {
+    constexpr const char* table = "uses";
+    for (const bw_use& row : copy_rows<bw_use>(table, in_.uses, use_rows, report_, no_use)) {
+      const std::size_t n = out_.uses.size() + 1;
+      bath::Use use;
+      use.id = text({table, n, "id"}, row.id, Need::required);
+      use.label = text({table, n, "label"}, row.label, Need::required);
+      code({table, n, "counted_in"}, row.counted_in, BW_PER_M2_HOUR);
+      use.counted_in =
+          static_cast<bath::CountedIn>(std::clamp<std::uint32_t>(row.counted_in, 1, BW_PER_M2_HOUR));
+      use.source = source_key({table, n, "source"}, row.source);
+      const auto effects = terms({table, n, "effects"}, row.effects, row.effect_count);
+      for (const auto& [id, grams] : effects) quantity_of({table, n, "effects"}, id);
+      for (std::size_t i = 0; i < effects.size(); ++i)  // in the order of the table, which is that of `rate`
+        use.effects.push_back({row.effects[i].id, row.effects[i].coefficient});
+      use.effects_u_rel = row.effects_spread;
+      if (!std::isnan(row.effects_spread)) number({table, n, "effects_spread"}, row.effects_spread, 0, 10);
+      use.deposits = text({table, n, "deposits"}, row.deposits, Need::optional);
+      if (!use.deposits.empty()) {
+        quantity_of({table, n, "deposits"}, use.deposits);
+        if (use.counted_in == bath::CountedIn::ampere_hour) read_current(n, row, use);
       }
+      if (row.rate) use.rate = call_rate(out_.id + ' ' + use.id, row.rate, row.effect_count);
+      out_.uses.push_back(std::move(use));
+    }
+  }
+  void read_current(std::size_t n, const bw_use& row, bath::Use& use) {
+    use.electrons = number({"uses", n, "electrons"}, row.electrons, 1, 8);
+    const auto efficiency = [&](const char* field, const bw_datum& stated, double& value, double& u) {
+      value = number({"uses", n, field}, stated.value, 0, 1);
+      u = stated.spread;
+      source({"uses", n, field}, stated.source);
+    };
+    efficiency("cathode_efficiency", row.cathode_efficiency, use.cathode_efficiency,
+               use.u_cathode_efficiency);
+    efficiency("anode_efficiency", row.anode_efficiency, use.anode_efficiency, use.u_anode_efficiency);
+  }
+
+  void read_incompatibilities() {
+    constexpr const char* table = "incompatibilities";
+    for (const bw_incompatibility& row :
+         copy_rows<bw_incompatibility>(table, in_.incompatibilities, incompatibility_rows, report_)) {
+      const std::size_t n = out_.incompatibilities.size() + 1;
+      code({table, n, "level"}, row.level, BW_STOP);
+      out_.incompatibilities.push_back(
+          {text({table, n, "with"}, row.with, Need::required),
+           text({table, n, "why"}, row.why, Need::required, Length::generous),
+           static_cast<bath::Level>(std::clamp<std::uint32_t>(row.level, 1, BW_STOP)),
+           source_key({table, n, "source"}, row.source)});
     }
   }
   void quantity_of(Place place, const std::string& id) {

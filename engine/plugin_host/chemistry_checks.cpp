@@ -26,7 +26,7 @@ using Imbalance = std::map<std::string, double>;
 class OwnReactions {
  public:
   OwnReactions(const bath::BathType& type, Report& report)
-      : shared_(Equilibria::built_in(type.convention)), report_(report) {
+      : shared_(Equilibria::built_in(type.convention, type.sets.zinc)), report_(report) {
     for (const auto& [name, data] : shared_.species()) known_.push_back(name);
     for (const auto& own : type.own_species) known_.push_back(own.name);
     known_.emplace_back("H2O");
@@ -97,26 +97,39 @@ void check_own_reactions(const bath::BathType& type, Report& report) {
 }
 
 void check_components(const bath::BathType& type, const Equilibria& all, Report& report) {
-  std::size_t by_pH = 0, by_charge = 0;
+  std::size_t acids = 0, by_charge = 0;
   for (std::size_t i = 0; i < type.components.size(); ++i) {
     const auto& [species, found_by] = type.components[i];
     if (!species.empty() && std::ranges::find(all.basis(), species) == all.basis().end())
       report.add({"components", i + 1, "species"}, "'" + species + "' is not a basis species", "",
                  hint(species, all.basis()));
-    if ((found_by == bath::FoundBy::pH) != (species == "H^+"))
+    const bool is_acid = species == "H^+";
+    if ((found_by == bath::FoundBy::pH && !is_acid) || (found_by == bath::FoundBy::book && is_acid))
       report.add({"components", i + 1, "found_by"}, "'" + species + "' and how it is found do not agree",
-                 "H^+, and only H^+, by pH");
+                 "H^+ by pH, by analysis or by charge, and nothing else by pH");
     if (found_by == bath::FoundBy::charge && activity::charge_in_name(species) == 0)
       report.add({"components", i + 1, "found_by"}, "'" + species + "' has no charge to be found by",
                  "an ion");
-    by_pH += found_by == bath::FoundBy::pH;
+    acids += is_acid;
     by_charge += found_by == bath::FoundBy::charge;
   }
-  if (by_pH != 1)
-    report.add({"", 0, "components"}, std::to_string(by_pH) + " components are found by pH", "H^+ alone");
+  if (acids != 1)
+    report.add({"", 0, "components"}, std::to_string(acids) + " of the components are H^+", "one");
   if (by_charge != 1)
     report.add({"", 0, "components"}, std::to_string(by_charge) + " components are found by charge",
                "exactly one");
+}
+
+/// Acid that is analysed is found by way of a quantity that counts H^+.
+void check_acid_quantity(const bath::BathType& type, Report& report) {
+  const bool analysed = std::ranges::any_of(type.components, [](const bath::Component& c) {
+    return c.species == "H^+" && c.found_by == bath::FoundBy::analysis;
+  });
+  const bool stated =
+      std::ranges::any_of(type.quantities, [](const bath::Quantity& q) { return q.counts.contains("H^+"); });
+  if (analysed && !stated)
+    report.add({"", 0, "quantities"}, "H^+ is found by analysis, but no quantity counts it",
+               "an acid or alkali: \"H2SO4\" = H^+ / 2, \"NaOH\" = - H^+");
 }
 
 void check_watched_solids(const bath::BathType& type, const Equilibria& all, Report& report) {
@@ -142,7 +155,8 @@ void check_watched_solids(const bath::BathType& type, const Equilibria& all, Rep
 
 void check_chemistry(const bath::BathType& type, Report& report) {
   check_own_reactions(type, report);
-  const auto all = Equilibria::built_in(type.convention).with(type.own_species, type.own_solids);
+  const auto all =
+      Equilibria::built_in(type.convention, type.sets.zinc).with(type.own_species, type.own_solids);
   if (!all) {
     for (const Problem& problem : all.problems()) {
       // The report names the type itself.
@@ -152,20 +166,8 @@ void check_chemistry(const bath::BathType& type, Report& report) {
     return;
   }
   check_components(type, *all, report);
+  check_acid_quantity(type, report);
   check_watched_solids(type, *all, report);
-}
-
-void check_safety(const bath::BathType& type, Report& report) {
-  constexpr std::pair<const char*, const char*> deadly[] = {
-      {"CN^-", "cyanide"}, {"CrO4^2-", "chromium(VI)"}, {"F^-", "fluoride"}, {"H2O2", "peroxide"}};
-  const bool stops =
-      std::ranges::find(type.cautions, bath::Level::stop, &bath::Caution::level) != type.cautions.end();
-  if (stops) return;
-  for (const auto& [species, common_name] : deadly)
-    if (std::ranges::find(type.components, species, &bath::Component::species) != type.components.end())
-      report.add({"", 0, "cautions"},
-                 std::string("a bath with ") + common_name + " has no caution of level stop",
-                 "what can kill, said plainly");
 }
 
 }  // namespace bathwright::plugin_host

@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/matter/stock.hpp>
 #include <cmath>
 #include <set>
 
@@ -41,6 +42,15 @@ bool rising(std::initializer_list<double> limits) {
   return true;
 }
 
+void check_incompatibilities(const bath::BathType& type, Report& report) {
+  const auto& catalogue = matter::StockCatalogue::built_in();
+  Names known = catalogue.ids();
+  for (const auto& kind : catalogue.incompatibilities()) known.push_back(kind.id);
+  for (std::size_t i = 0; i < type.incompatibilities.size(); ++i)
+    one_of({"incompatibilities", i + 1, "with"}, type.incompatibilities[i].with, known,
+           "a stock chemical or a kind of incompatibility", report);
+}
+
 }  // namespace
 
 void check_references(const bath::BathType& type, Report& report) {
@@ -66,15 +76,16 @@ void check_references(const bath::BathType& type, Report& report) {
   for (std::size_t i = 0; i < type.quantities.size(); ++i)
     for (const auto& [component, coefficient] : type.quantities[i].counts)
       one_of({"quantities", i + 1, "counts"}, component, components, "a component", report);
-  for (const char* word : {"pH", "temperature"}) measured.emplace_back(word);
+  for (const char* word : {"pH", "temperature", "current-density"}) measured.emplace_back(word);
   for (std::size_t i = 0; i < type.windows.size(); ++i) {
     const bath::Window& w = type.windows[i];
     one_of({"windows", i + 1, "subject"}, w.subject, measured,
-           "a quantity, an indicator, 'pH' or 'temperature'", report);
+           "a quantity, an indicator, 'pH', 'temperature' or 'current-density'", report);
     if (!rising({w.stop_low, w.low, w.aim, w.high, w.stop_high}))
       report.add({"windows", i + 1, ""}, "the limits of '" + w.subject + "' are out of order",
                  "stop_low <= low <= aim <= high <= stop_high");
   }
+  check_incompatibilities(type, report);
   levels.insert(levels.end(), supplies.begin(), supplies.end());
   for (std::size_t i = 0; i < type.cautions.size(); ++i)
     one_of({"cautions", i + 1, "subject"}, type.cautions[i].subject, levels,

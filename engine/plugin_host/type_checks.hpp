@@ -14,7 +14,9 @@ void check_references(const bath::BathType& type, Report& report);
 /// has its way of being found.
 void check_chemistry(const bath::BathType& type, Report& report);
 
-/// Substances that kill have a caution of level stop.
+/// A bath that holds cyanide, chromium(VI), fluoride, formaldehyde, hydrazine or a strong oxidiser, by the
+/// formulae of its components, quantities and supplies, says so in a caution of level stop, and an alkaline
+/// cyanide bath forbids acid.
 void check_safety(const bath::BathType& type, Report& report);
 
 }  // namespace bathwright::plugin_host

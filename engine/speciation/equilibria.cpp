@@ -270,6 +270,7 @@ Outcome Equilibria::resolve() {
   Problems problems;
   std::map<std::string, std::pair<const StatedSpecies*, Reaction>> formed_by;
   for (const StatedSpecies& stated : stated_species_) {
+    if (stated.reaction.empty()) continue;
     auto reaction = parse_reaction(stated.reaction, stated.where);
     if (!reaction)
       problems.insert(problems.end(), reaction.problems().begin(), reaction.problems().end());
@@ -337,7 +338,10 @@ Outcome Equilibria::resolve() {
 
   for (const StatedSpecies& stated : stated_species_) {
     const auto row = formed_by.find(stated.name);
-    if (row == formed_by.end()) continue;
+    if (row == formed_by.end()) {
+      if (stated.reaction.empty()) resolve_species(resolve_species, stated.name, stated.where);
+      continue;
+    }
     resolve_species(resolve_species, stated.name, stated.where);
     for (const auto* side : {&row->second.second.left, &row->second.second.right})
       for (const Term& term : *side)

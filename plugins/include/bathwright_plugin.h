@@ -46,9 +46,10 @@ enum { BW_NOTICE = 1, BW_WARN = 2, BW_STOP = 3 };
 
 /* How the total of a component is known when a tank is analysed. */
 enum {
-  BW_BY_ANALYSIS = 1, /* titrated, or reported by a laboratory                           */
+  BW_BY_ANALYSIS = 1, /* titrated, or reported by a laboratory; H^+ by way of a quantity such as H2SO4 or
+                       * NaOH, in baths whose acid or alkali is titrated                  */
   BW_BY_PH = 2,       /* H^+, and only H^+                                               */
-  BW_BY_CHARGE = 3,   /* the counter-ion that electroneutrality gives: one per bath type */
+  BW_BY_CHARGE = 3,   /* what electroneutrality leaves: exactly one per bath type; H^+ in chromic acid */
   BW_BY_BOOK = 4      /* carried from the last state of the tank                         */
 };
 
@@ -70,9 +71,16 @@ enum { BW_SALT_VIEW = 1 };
  * coefficients (interaction, Pitzer) or as explicit species (association, Davies and Debye-Hueckel). */
 enum { BW_INTERACTION = 1, BW_ASSOCIATION = 2 };
 enum { BW_LITTLE_CHLORIDE = 1, BW_MUCH_CHLORIDE = 2 };
+enum { BW_ZINC_DILUTE = 1, BW_ZINC_IN_CHLORIDE = 2, BW_ZINC_IN_ALKALI = 3 };
 
 /* What one unit of a use is. */
-enum { BW_PER_AH = 1, BW_PER_G_DEPOSIT = 2, BW_PER_M2 = 3, BW_PER_HOUR = 4 };
+enum {
+  BW_PER_AH = 1,
+  BW_PER_G_DEPOSIT = 2, /* of the metal that `deposits` names */
+  BW_PER_M2 = 3,        /* of work, both sides */
+  BW_PER_HOUR = 4,
+  BW_PER_M2_HOUR = 5 /* of the open surface of the tank */
+};
 
 /* Quality of a number; 0 is unrated. */
 enum { BW_REVIEWED = 1, BW_MEASURED = 2, BW_ESTIMATED = 3 };
@@ -130,7 +138,8 @@ typedef struct bw_quantity {
 /* A dissolved species the shared tables lack, or state otherwise. */
 typedef struct bw_own_species {
   const char* name;         /* [req] a formula with its charge: "NiOH^+" */
-  const char* reaction;     /* [req] forms one of it: "Ni^2+ + OH^- = NiOH^+" (terms joined by " + ") */
+  const char* reaction;     /* forms one of it: "Ni^2+ + OH^- = NiOH^+" (terms joined by " + "). NULL: made of
+                             * nothing else, to be a component; its constants are not read but for the source */
   bw_datum log10_K;         /* 25 degC, molal */
   bw_datum dH_kJ_per_mol;   /* NaN unknown: no correction for temperature */
   bw_datum dCp_J_per_mol_K; /* NaN unknown: taken as 0 */
@@ -157,7 +166,8 @@ typedef struct bw_watched_solid {
 
 /* Default limits, which a tank file may narrow or widen. NaN = open. */
 typedef struct bw_window {
-  const char* subject;        /* [req] id of a quantity (g/L) or indicator, "pH", or "temperature" (degC) */
+  const char* subject;        /* [req] id of a quantity (g/L) or indicator, "pH", "temperature" (degC) or
+                               * "current-density" (A/dm2, of the work) */
   double low, aim, high;      /* where the bath should be kept */
   double stop_low, stop_high; /* outside these no work goes in; on or outside low and high */
   uint32_t source, reserved;  /* R6; 0 */
@@ -174,6 +184,15 @@ typedef struct bw_addition_rule {
   uint32_t order;           /* smaller goes in earlier */
   uint32_t source;          /* R6 */
 } bw_addition_rule;
+
+/* What must never go into the bath, or never meet it. */
+typedef struct bw_incompatibility {
+  const char* with; /* [req] id of a stock chemical, or of a kind of incompatibility of the shared tables
+                     * ("acid_cyanide": whatever stock chemical is of that kind) */
+  const char* why;  /* [req][long] what would happen, in plain words */
+  uint32_t level;   /* BW_STOP: the host refuses to plan or record it; BW_WARN: it says so */
+  uint32_t source;  /* R6 */
+} bw_incompatibility;
 
 typedef struct bw_caution {
   const char* subject;    /* id of a quantity or supply; NULL or "": the whole bath */
@@ -217,7 +236,8 @@ typedef struct bw_indicator {
  * its formula and `electrons`; current that deposits no metal evolves hydrogen and uses up H^+. */
 typedef struct bw_use {
   const char *id, *label;      /* [req] */
-  const bw_term* effects;      /* quantity `id` -> g per unit, the deposited metal apart; < 0 is consumed */
+  const bw_term* effects;      /* quantity `id` -> g of its formula per unit, the deposited metal apart;
+                                * < 0 is consumed. What charge all of it leaves is made up in H^+ and water */
   uint32_t effect_count;       /* may be 0 */
   uint32_t counted_in;         /* BW_PER_AH ... */
   const char* deposits;        /* quantity id of the metal plated out; NULL: none */
@@ -225,6 +245,10 @@ typedef struct bw_use {
   bw_datum cathode_efficiency; /* fraction of the current that deposits metal, 0..1 */
   bw_datum anode_efficiency;   /* fraction of the current that dissolves metal, 0..1; 0: inert anodes */
   uint32_t source, reserved;   /* R6, of the effects; 0 */
+  double effects_spread;       /* relative standard uncertainty of the effects; NaN unknown */
+  /* [calc] or NULL: the effects in this state of the bath, n = effect_count of them, in place of the table's;
+   * n finite values with BW_OK. */
+  bw_status (*rate)(const bw_view* view, double* g_per_unit, uint32_t n);
 } bw_use;
 
 /* ---- Top structs ------------------------------------------------------------------------------------------
@@ -253,6 +277,8 @@ typedef struct bw_bath_type {
   uint32_t convention;                  /* BW_INTERACTION or BW_ASSOCIATION */
   uint32_t acid_set;                    /* BW_LITTLE_CHLORIDE or BW_MUCH_CHLORIDE (more than a third of the
                                          * sulfate): which regressed interactions serve acid in a metal sulfate */
+  uint32_t zinc_set;                    /* BW_ZINC_DILUTE ...: which interactions serve zinc; 0: dilute */
+  uint32_t reserved;                    /* 0 */
   bw_rows sources;                      /* bw_source, >= 1 */
   bw_rows components;                   /* bw_component, >= 1 */
   bw_rows quantities;                   /* bw_quantity, >= 1 */
@@ -264,6 +290,7 @@ typedef struct bw_bath_type {
   bw_rows cautions;                     /* bw_caution */
   bw_rows indicators;                   /* bw_indicator */
   bw_rows uses;                         /* bw_use */
+  bw_rows incompatibilities;            /* bw_incompatibility */
 } bw_bath_type;
 
 #define BW_EXPORT __attribute__((visibility("default")))

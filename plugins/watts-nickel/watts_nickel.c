@@ -190,7 +190,15 @@ static const bw_use uses[] = {
      {0.96, UNKNOWN, HANDBOOKS, BW_ESTIMATED},
      {1.0, UNKNOWN, HANDBOOKS, BW_ESTIMATED},
      HANDBOOKS,
-     0},
+     0,
+     UNKNOWN,
+     NULL},
+};
+
+static const bw_incompatibility incompatibilities[] = {
+    {"acid_cyanide", "Cyanide in this acid bath gives off hydrogen cyanide gas.", BW_STOP, COMMON_PRACTICE},
+    {"acid_sulfide", "Sulfide in this acid bath gives off hydrogen sulfide gas and throws nickel sulfide.",
+     BW_STOP, COMMON_PRACTICE},
 };
 
 static const bw_bath_type watts_nickel = {
@@ -222,6 +230,7 @@ static const bw_bath_type watts_nickel = {
     .cautions = TABLE(cautions),
     .indicators = TABLE(indicators),
     .uses = TABLE(uses),
+    .incompatibilities = TABLE(incompatibilities),
 };
 
 bw_status bw_entry_1(const bw_host* host, uint32_t index, const bw_bath_type** out) {

@@ -31,7 +31,7 @@ Fields fields_of(StatedBath& bath) {
   bw_bath_type& head = bath.head;
   texts = {&head.id, &head.name, &head.version, &head.author, &head.licence, &head.summary, &head.validity};
   numbers = {&head.min_C, &head.max_C, &head.max_ionic_strength_mol_per_kg};
-  codes = {&head.convention, &head.acid_set};
+  codes = {&head.convention, &head.acid_set, &head.zinc_set};
   for (bw_source& row : bath.sources) texts.insert(texts.end(), {&row.key, &row.citation, &row.terms});
   for (bw_component& row : bath.components) texts.push_back(&row.species), codes.push_back(&row.found_by);
   for (auto* terms : {&bath.nickel, &bath.chloride_ion, &bath.effects}) {
@@ -69,9 +69,13 @@ Fields fields_of(StatedBath& bath) {
   }
   for (bw_indicator& row : bath.indicators)
     texts.insert(texts.end(), {&row.id, &row.label, &row.meaning, &row.unit});
+  for (bw_incompatibility& row : bath.incompatibilities) {
+    texts.insert(texts.end(), {&row.with, &row.why});
+    codes.insert(codes.end(), {&row.level, &row.source});
+  }
   for (bw_use& row : bath.uses) {
     texts.insert(texts.end(), {&row.id, &row.label, &row.deposits});
-    numbers.push_back(&row.electrons);
+    numbers.insert(numbers.end(), {&row.electrons, &row.effects_spread});
     codes.insert(codes.end(), {&row.counted_in, &row.source});
     fields.datum(row.cathode_efficiency);
     fields.datum(row.anode_efficiency);

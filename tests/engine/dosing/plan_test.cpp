@@ -75,7 +75,7 @@ TEST_CASE("a plan re-checked from its own slip ends where it said", "[property][
       speciation::ChemicalSystem::make(speciation::Equilibria::built_in(activity::Convention::interaction),
                                        {"SO4^2-", "Ni^2+", "H3BO3", "Cl^-"})));
   const auto solver =
-      must(speciation::Solver::prepare(system, activity::ModelKind::pitzer, {55}, demo::watts().acid_set));
+      must(speciation::Solver::prepare(system, activity::ModelKind::pitzer, {55}, demo::watts().sets.acid));
   speciation::Task task;
   for (const std::string& name : system->components())
     task.component_mol.push_back(start.component_mol[*demo::chemistry().working().system().component(name)]);

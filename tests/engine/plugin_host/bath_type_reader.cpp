@@ -61,10 +61,21 @@ TEST_CASE("each fault of the tables is refused where it stands", "[failure][plug
        [](StatedBath& b) { b.components[1].species = "Ni^3+"; }},
       {"test-bath components", "2 components are found by charge",
        [](StatedBath& b) { b.components[1].found_by = BW_BY_CHARGE; }},
-      {"test-bath components", "0 components are found by pH",
+      {"test-bath components", "0 of the components are H^+",
        [](StatedBath& b) { b.components.erase(b.components.begin()); }},
       {"test-bath components row 1 found_by", "'H^+' and how it is found do not agree",
+       [](StatedBath& b) { b.components[0].found_by = BW_BY_BOOK; }},
+      {"test-bath components row 2 found_by", "'Ni^2+' and how it is found do not agree",
+       [](StatedBath& b) { b.components[1].found_by = BW_BY_PH; }},
+      {"test-bath quantities", "H^+ is found by analysis, but no quantity counts it",
        [](StatedBath& b) { b.components[0].found_by = BW_BY_ANALYSIS; }},
+      {"test-bath incompatibilities row 1 with", "'sulphide' is not a stock chemical or a kind",
+       [](StatedBath& b) { b.incompatibilities[0].with = "sulphide"; }},
+      {"test-bath uses row 1 effects", "'Zn^2+' is not a quantity",
+       [](StatedBath& b) { b.effects[0].id = "Zn^2+"; }},
+      {"test-bath uses row 1 effects_spread", "is out of range",
+       [](StatedBath& b) { b.uses[0].effects_spread = -1; }},
+      {"test-bath zinc_set", "the code 4 is not known", [](StatedBath& b) { b.head.zinc_set = 4; }},
       {"test-bath components row 3 found_by", "the code 9 is not known",
        [](StatedBath& b) { b.components[2].found_by = 9; }},
       {"test-bath quantities row 1 formula", "there is no element",
@@ -116,10 +127,29 @@ TEST_CASE("each fault of the tables is refused where it stands", "[failure][plug
        [](StatedBath& b) { b.uses[0].cathode_efficiency.value = 96; }},
       {"test-bath uses row 1 effects", "'acid' is not a quantity",
        [](StatedBath& b) { b.effects[0].id = "acid"; }},
-      {"test-bath cautions", "a bath with cyanide has no caution of level stop",
+      {"test-bath cautions", "a bath with cyanide (CN^-) has no caution of level stop that speaks of it",
        [](StatedBath& b) {
          b.components.push_back({"CN^-", BW_BY_BOOK, 0});
-         b.cautions.clear();
+       }},
+      {"test-bath cautions", "a bath with chromium(VI) (CrO4^2-) has no caution",
+       [](StatedBath& b) {
+         b.components.push_back({"CrO4^2-", BW_BY_BOOK, 0});
+       }},
+      {"test-bath cautions", "a bath with fluoride (F^-) has no caution",
+       [](StatedBath& b) {
+         b.components.push_back({"F^-", BW_BY_BOOK, 0});
+       }},
+      {"test-bath cautions", "a bath with hydrazine (N2H4) has no caution",
+       [](StatedBath& b) { b.quantities[1].formula = "N2H4"; }},
+      {"test-bath cautions", "a bath with formaldehyde (CH2O) has no caution",
+       [](StatedBath& b) { b.quantities[1].formula = "CH2O"; }},
+      {"test-bath cautions", "a bath with a strong oxidiser (H2O2) has no caution",
+       [](StatedBath& b) { b.quantities[1].formula = "H2O2"; }},
+      {"test-bath incompatibilities", "a cyanide bath without acid among them",
+       [](StatedBath& b) {
+         b.components.push_back({"CN^-", BW_BY_BOOK, 0});
+         b.cautions.push_back({"", "Cyanide kills.", BW_STOP, 1});
+         b.windows[1].low = 11, b.windows[1].high = 13;
        }},
   };
   for (const Row& row : rows) {
@@ -152,7 +182,7 @@ TEST_CASE("sizes that cannot be right are refused before a row is read", "[failu
     void (*spoil)(bw_bath_type&);
   };
   const Row rows[] = {
-      {"a bath type of 264 bytes", [](bw_bath_type& t) { t.size = sizeof t - 8; }},
+      {"a bath type of 288 bytes", [](bw_bath_type& t) { t.size = sizeof t - 8; }},
       {"a bath type of 0 bytes", [](bw_bath_type& t) { t.size = 0; }},
       {"rows of 48 bytes", [](bw_bath_type& t) { t.windows.row_size -= 8; }},
       {"rows of 57 bytes", [](bw_bath_type& t) { t.windows.row_size += 1; }},

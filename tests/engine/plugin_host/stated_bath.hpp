@@ -57,7 +57,11 @@ struct StatedBath {
                                {0.9, open, 1, 0},
                                {1, open, 1, 0},
                                1,
-                               0}};
+                               0,
+                               0.2,
+                               nullptr}};
+  std::vector<bw_incompatibility> incompatibilities = {
+      {"sulfide", "Nickel sulfide settles out.", BW_WARN, 1}};
   bw_bath_type head = {sizeof(bw_bath_type),
                        BW_ABI_MINOR,
                        "test-bath",
@@ -72,6 +76,9 @@ struct StatedBath {
                        open,
                        BW_INTERACTION,
                        BW_LITTLE_CHLORIDE,
+                       BW_ZINC_DILUTE,
+                       0,
+                       {},
                        {},
                        {},
                        {},
@@ -101,6 +108,7 @@ struct StatedBath {
     type.cautions = rows(cautions);
     type.indicators = rows(indicators);
     type.uses = rows(uses);
+    type.incompatibilities = rows(incompatibilities);
     return type;
   }
 };

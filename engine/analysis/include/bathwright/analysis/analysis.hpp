@@ -30,7 +30,7 @@ struct Analysis {
   units::Litres volume;
   std::string volume_from;  ///< "2400 L at the mark, 3 cm low on 200 dm2"
   units::Celsius temperature;
-  double pH = 0;
+  double pH = 0;  ///< as read; as computed where the acid or alkali is analysed and no pH was read
   std::vector<LevelFound> results;  ///< components, salt views, counter-ion; nothing that counts H^+
   bath::TankState state;
   units::KilogramsPerLitre density_predicted;

@@ -23,9 +23,9 @@ struct Source {
 
 /// How the total of a component is known when a tank is analysed.
 enum class FoundBy : std::uint8_t {
-  analysis,  ///< titrated, or reported by a laboratory
+  analysis,  ///< titrated, or reported by a laboratory; H^+ by way of an acid or alkali, H2SO4 or NaOH
   pH,        ///< H^+
-  charge,    ///< from electroneutrality: the counter-ion nobody titrates (one per bath type)
+  charge,    ///< what electroneutrality leaves: the counter-ion nobody titrates (one per bath type)
   book       ///< carried from the last state
 };
 
@@ -47,9 +47,9 @@ struct Quantity {
   bool salt_view = false;  ///< another way to state components that are quantities of their own
 };
 
-/// Limits in g/L (or pH units, degC). NaN: open.
+/// Limits in g/L (or pH units, degC, A/dm2). NaN: open.
 struct Window {
-  std::string subject;  ///< a quantity's id, an indicator's id, "pH" or "temperature"
+  std::string subject;  ///< a quantity's id, an indicator's id, "pH", "temperature" or "current-density"
   double low = not_given, aim = not_given, high = not_given;
   double stop_low = not_given, stop_high = not_given;
   std::string source;
@@ -81,6 +81,14 @@ struct Caution {
   std::string source;
 };
 
+/// What must never go into the bath: a stock chemical, or every stock chemical of a kind of incompatibility.
+struct Incompatible {
+  std::string with;  ///< stock chemical id, or matter::Incompatibility id
+  std::string why;
+  Level level = Level::stop;
+  std::string source;
+};
+
 /// What an indicator may look at: the solved bath. Spans are in the order of BathType's lists and of the
 /// solved species.
 struct IndicatorView {
@@ -95,12 +103,34 @@ struct Indicator {
   std::function<Result<double>(const IndicatorView&)> evaluate;  ///< any thread
 };
 
+/// What one unit of a use is.
+enum class CountedIn : std::uint8_t { ampere_hour = 1, gram_deposited, m2_of_work, hour, m2_surface_hour };
+
+/// What one unit of work does to the bath, drag-out apart.
+struct Use {
+  std::string id, label;
+  CountedIn counted_in = CountedIn::ampere_hour;
+  struct Effect {
+    std::string quantity;
+    double g_per_unit;  ///< of the quantity's formula; negative: consumed
+  };
+  std::vector<Effect> effects;                          ///< the deposited metal apart
+  double effects_u_rel = not_given;                     ///< relative standard uncertainty of the effects
+  std::string deposits;                                 ///< quantity of the metal plated out; empty: none
+  double electrons = not_given;                         ///< per atom of it
+  double cathode_efficiency = 1, anode_efficiency = 0;  ///< fractions of the current; anode 0: inert
+  double u_cathode_efficiency = not_given, u_anode_efficiency = not_given;
+  std::string source;
+  /// The effects in this state of the bath, in place of the table's; empty where they do not depend on it.
+  std::function<Result<std::vector<double>>(const IndicatorView&)> rate;  ///< any thread
+};
+
 struct BathType {
   std::string id, name, version, author, licence;
   std::string summary, validity;
   double min_C = 0, max_C = 100, max_ionic_strength = not_given;
   activity::Convention convention = activity::Convention::interaction;
-  activity::AcidSet acid_set = activity::AcidSet::sulfate;  ///< where a metal sulfate meets acid
+  activity::ParameterSets sets;  ///< which of the regressed sets that exclude each other
   std::vector<Source> sources;
   std::vector<Component> components;
   std::vector<Quantity> quantities;
@@ -111,8 +141,11 @@ struct BathType {
   std::vector<AdditionRule> additions;
   std::vector<Indicator> indicators;
   std::vector<Caution> cautions;
+  std::vector<Incompatible> incompatibilities;
+  std::vector<Use> uses;
 
   [[nodiscard]] const Quantity* quantity(std::string_view id) const;  ///< nullptr if there is none
+  [[nodiscard]] bool acid_by_pH() const;  ///< H^+ follows from the pH, not from an analysis or the charges
 };
 
 }  // namespace bathwright::bath

@@ -34,6 +34,11 @@ struct SpeciesView {
   std::optional<double> u_log10_activity{};  ///< as those of Headroom
 };
 
+struct GasView {
+  std::string name;
+  double bar;  ///< partial pressure over the liquid at the working temperature
+};
+
 struct IndicatorValue {
   std::string id, label, meaning, unit;
   std::optional<double> value;  ///< nothing: not available, `note` says why
@@ -43,8 +48,10 @@ struct IndicatorValue {
 /// Everything that can be said of a tank's state.
 struct TankView {
   double volume_L = 0, density_kg_per_L = 0, pH = 0, ionic_strength = 0, water_activity = 0;
+  std::optional<double> u_pH;            ///< where the pH is computed; as those of Headroom
   std::vector<double> quantity_g_per_L;  ///< in the order of BathType::quantities
   std::vector<SpeciesView> species;      ///< by falling molality
+  std::vector<GasView> gases;            ///< over the tank, at equilibrium
   std::vector<Headroom> headroom;
   std::vector<IndicatorValue> indicators;
   std::vector<std::string> warnings;  ///< out of range, estimated or missing interactions that matter here
@@ -64,7 +71,10 @@ class Chemistry {
   [[nodiscard]] const BathType& type() const;
   /// Basis species the totals are counted in; H^+ first.
   [[nodiscard]] const std::vector<std::string>& components() const;
-  [[nodiscard]] std::size_t counter_ion() const;  ///< the component found by charge
+  [[nodiscard]] std::size_t found_by_charge() const;  ///< the component that electroneutrality gives
+  /// The ion that comes or goes with H^+ where a pH is held: the one found by charge, or, where that is H^+
+  /// itself, the first other ion.
+  [[nodiscard]] std::size_t counter_ion() const;
   [[nodiscard]] const speciation::Solver& working() const;
   [[nodiscard]] const speciation::Solver& idle() const;
   [[nodiscard]] units::Celsius working_temperature() const;
@@ -88,11 +98,13 @@ class Chemistry {
   [[nodiscard]] Result<TankView> quick_view(const TankState& state) const;
 
   /// The state of a tank from its levels: g/L per quantity id (those of components found by analysis, or
-  /// their salt views), pH, volume. The counter-ion follows from electroneutrality at that pH, the water from
-  /// the density model, so that volume_L gives the volume back. Fails on a component nobody gave, levels that
-  /// leave no room for the counter-ion (names them), a pH that cannot be reached.
-  [[nodiscard]] Result<TankState> state_from(const std::map<std::string, double>& g_per_L, double pH,
-                                             units::Litres volume, units::Celsius temperature) const;
+  /// their salt views), pH, volume. What is found by charge follows from electroneutrality (at that pH, where
+  /// the acid is found by pH; elsewhere the pH is not looked at), the water from the density model, so that
+  /// volume_L gives the volume back. Fails on a component nobody gave, levels that leave no room for what is
+  /// found by charge (names them), a pH that is missing or cannot be reached.
+  [[nodiscard]] Result<TankState> state_from(const std::map<std::string, double>& g_per_L,
+                                             std::optional<double> pH, units::Litres volume,
+                                             units::Celsius temperature) const;
 
   /// What a kg of a product brings. Fails when its substance needs a component the bath type does not have.
   [[nodiscard]] Result<Brings> brings(const matter::StockChemical& stock) const;

@@ -46,7 +46,9 @@ struct GasData {
 
 /// A reaction as a table or a bath type states it, before it is written over the basis.
 struct StatedSpecies {
-  std::string name, reaction, source, where;
+  std::string name;
+  std::string reaction;  ///< empty: made of nothing else, a basis species
+  std::string source, where;
   Constant constant;
   double measured_at_ionic_strength = 0;  ///< mol/kg; 0: already at zero ionic strength
 };
