@@ -90,8 +90,10 @@ Json json_of(const bath::BathType& type) {
   for (const auto& component : type.components) doc["components"].push_back(component.species);
   doc["quantities"] = Json::array();
   for (const auto& quantity : type.quantities)
-    doc["quantities"].push_back(
-        {{"id", quantity.id}, {"label", quantity.label}, {"salt_view", quantity.salt_view}});
+    doc["quantities"].push_back({{"id", quantity.id},
+                                 {"label", quantity.label},
+                                 {"counts", quantity.counts},
+                                 {"salt_view", quantity.salt_view}});
   doc["windows"] = Json::array();
   for (const auto& w : type.windows)
     doc["windows"].push_back({{"subject", w.subject},

@@ -22,8 +22,12 @@ Json json_of(const Shop& shop, const bath::TankView& view, const sheets::StateRe
   doc["volume_L"] = view.volume_L;
   doc["density_kg_per_L"] = view.density_kg_per_L;
   doc["pH"] = view.pH;
+  doc["pH_standard_uncertainty"] = or_null(view.u_pH);
   doc["ionic_strength"] = view.ionic_strength;
   doc["water_activity"] = view.water_activity;
+  doc["model"] = view.model;
+  doc["valid"] = view.valid;
+  doc["missing_interactions"] = view.missing;
   doc["concentrations"] = concentrations(shop.type(), view);
   doc["levels"] = level_list(sheets::judge(shop.tank, shop.type(), view.quantity_g_per_L, read.pH));
   doc["species"] = Json::array();
@@ -47,13 +51,18 @@ Json json_of(const Shop& shop, const bath::TankView& view, const sheets::StateRe
                                {"idle_kg_standard_uncertainty", or_null(h.u_idle_kg)},
                                {"forms_above_pH", h.forms_above_pH},
                                {"forms_above_pH_standard_uncertainty", or_null(h.u_forms_above_pH)}});
+  doc["gases"] = Json::array();
+  for (const auto& gas : view.gases)
+    doc["gases"].push_back({{"name", gas.name}, {"partial_pressure_bar", gas.bar}});
   doc["indicators"] = Json::array();
   for (const auto& i : view.indicators)
-    doc["indicators"].push_back({{"id", i.id},
-                                 {"value", i.value ? Json(*i.value) : Json(nullptr)},
-                                 {"unit", i.unit},
-                                 {"meaning", i.meaning},
-                                 {"note", i.note}});
+    doc["indicators"].push_back(
+        {{"id", i.id},
+         {"value", i.value ? Json(*i.value) : Json(nullptr)},
+         {"unit", i.unit},
+         {"state", i.value ? sheets::words(sheets::standing(shop.type(), i.id, *i.value)) : ""},
+         {"meaning", i.meaning},
+         {"note", i.note}});
   doc["cautions"] = Json::array();
   for (const auto& caution : shop.type().cautions) doc["cautions"].push_back(caution.text);
   return doc;

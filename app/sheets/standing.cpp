@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/standing.hpp>
 
@@ -19,11 +20,18 @@ std::string_view words(Standing standing) {
   return "";
 }
 
+Standing standing(const bath::BathType& type, std::string_view subject, double value) {
+  const auto window = std::ranges::find(type.windows, subject, &bath::Window::subject);
+  if (window == type.windows.end()) return Standing::not_controlled;
+  // An open limit is NaN and compares false.
+  if (value < window->stop_low || value > window->stop_high) return Standing::stop;
+  if (value < window->low) return Standing::low;
+  return value > window->high ? Standing::high : Standing::in_window;
+}
+
 Standing standing(const bath::Tank& tank, const bath::BathType& type, std::string_view quantity,
                   double value) {
-  for (const bath::Window& window : type.windows)  // an open limit is NaN and compares false
-    if (window.subject == quantity && (value < window.stop_low || value > window.stop_high))
-      return Standing::stop;
+  if (standing(type, quantity, value) == Standing::stop) return Standing::stop;
   const bath::Aim* aim = tank.aim(quantity);
   if (!aim) return Standing::not_controlled;
   if (value < aim->low) return Standing::low;

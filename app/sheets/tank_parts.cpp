@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/sheets/tank_parts.hpp>
@@ -65,11 +66,16 @@ Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headro
   return table.lines();
 }
 
-Lines free_ions(const std::vector<bath::SpeciesView>& species) {
+Lines free_ions(const bath::BathType& type, const std::vector<bath::SpeciesView>& species) {
+  const auto is_analysed = [&](const std::string& name) {
+    return std::ranges::any_of(type.components, [&](const bath::Component& c) {
+      return c.species == name && c.found_by != bath::FoundBy::book;
+    });
+  };
   Table table(
       {{"free"}, {"mol/kg", Align::number}, {"gamma", Align::number}, {"log10 a", Align::number}, {""}});
   for (const auto& s : species)
-    if (s.molality >= shown_molality || s.name == "H^+")
+    if (s.molality >= shown_molality || is_analysed(s.name))
       table.add({pretty(s.name), figure(s.molality), figure(s.gamma), fixed(s.log10_activity, 3),
                  give_or_take(s.u_log10_activity)});
   return table.lines();

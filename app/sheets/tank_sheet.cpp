@@ -9,10 +9,25 @@
 namespace bathwright::sheets {
 namespace {
 
-Lines indicators(const std::vector<bath::IndicatorValue>& values) {
-  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"what it says"}});
+Lines indicators(const bath::BathType& type, const std::vector<bath::IndicatorValue>& values) {
+  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"state"}, {"what it says"}});
   for (const auto& v : values)
-    table.add({v.label, v.value ? figure(*v.value) : "", v.unit, v.value ? v.meaning : v.note});
+    table.add({v.label, v.value ? figure(*v.value) : "", v.unit,
+               v.value ? std::string(words(standing(type, v.id, *v.value))) : "not available",
+               v.value ? v.meaning : v.note});
+  return table.lines();
+}
+
+/// What a nose or a lung would meet at the surface if nothing moved the air. Carbon dioxide, oxygen and
+/// hydrogen harm nobody here.
+Lines over_the_tank(const std::vector<bath::GasView>& gases) {
+  constexpr double atm_bar = 1.01325, shown_ppm = 0.01;
+  Table table({{"gas"}, {"ppm", Align::number}});
+  for (const auto& gas : gases) {
+    const double ppm = 1e6 * gas.bar / atm_bar;
+    if (ppm >= shown_ppm && gas.name != "CO2" && gas.name != "O2" && gas.name != "H2")
+      table.add({pretty(gas.name), figure(ppm, 2)});
+  }
   return table.lines();
 }
 
@@ -29,10 +44,13 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
                  fixed(view.density_kg_per_L, 4) + " kg/L, ionic strength " + fixed(view.ionic_strength, 2) +
                  " mol/kg, water activity " + fixed(view.water_activity, 4) + ".");
   const auto judged = judge(tank, type, view.quantity_g_per_L, read.pH);
+  if (!view.valid)
+    say(lines,
+        "Indicative only: the solution lies outside what the model was tested for; see what is doubtful.");
   heading(lines, "Levels");
   append(lines, levels(judged));
   heading(lines, "In solution");
-  append(lines, free_ions(view.species));
+  append(lines, free_ions(type, view.species));
   heading(lines, "Headroom");
   append(lines, headroom(tank, view.headroom));
   const auto uncertain = [](const bath::SpeciesView& s) { return s.u_log10_activity.has_value(); };
@@ -42,7 +60,11 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
         "levels and pH count as exact.");
   if (!view.indicators.empty()) {
     heading(lines, "Indicators");
-    append(lines, indicators(view.indicators));
+    append(lines, indicators(type, view.indicators));
+  }
+  if (const Lines gases = over_the_tank(view.gases); gases.size() > 1) {
+    heading(lines, "Over the tank, in still air");
+    append(lines, gases);
   }
   const auto of_the_tank =
       [&](const bath::Caution& caution) {  // those of a chemical stand on the addition sheet

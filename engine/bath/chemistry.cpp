@@ -257,10 +257,13 @@ Result<TankView> Chemistry::view(const TankState& state) const {
     view.indicators.push_back(std::move(value));
   }
 
+  view.model = activity::name(p.working.model().kind());
   if (view.ionic_strength > p.type.max_ionic_strength)
     view.warnings.push_back("the ionic strength is beyond what " + p.type.name +
                             " was made for: " + p.type.validity);
   const speciation::Coverage covered = speciation::coverage(p.working, *now);
+  view.valid = covered.valid;
+  view.missing = covered.missing;
   for (const std::string& warning : covered.warnings) view.warnings.push_back(warning);
   for (const std::string& missing : covered.missing) view.warnings.push_back(missing);
   for (std::string& warning :

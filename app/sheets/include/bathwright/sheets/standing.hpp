@@ -15,6 +15,9 @@ enum class Standing : std::uint8_t { not_controlled, in_window, low, high, stop 
 [[nodiscard]] Standing standing(const bath::Tank& tank, const bath::BathType& type, std::string_view quantity,
                                 double value);
 
+/// A figure that the tank does not aim at, an indicator say, against the bath type's window.
+[[nodiscard]] Standing standing(const bath::BathType& type, std::string_view subject, double value);
+
 /// Every controlled quantity and pH, in the order of the tank's aims; a chemical of the shelf by its name
 /// there.
 struct Judged {

@@ -15,7 +15,8 @@ void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Ce
 /// Room of each watched solid at the working and the idle temperature.
 [[nodiscard]] Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headroom);
 
-[[nodiscard]] Lines free_ions(const std::vector<bath::SpeciesView>& species);
+/// Species that matter to a level, and the free ions of what is analysed, however little there is of them.
+[[nodiscard]] Lines free_ions(const bath::BathType& type, const std::vector<bath::SpeciesView>& species);
 
 /// What would crystallise, and where: "NiSO₄·7H₂O at 18 degC: 40 kg would crystallise".
 [[nodiscard]] std::vector<std::string> crystallising(const bath::Tank& tank,

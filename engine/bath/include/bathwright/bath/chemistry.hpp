@@ -54,7 +54,10 @@ struct TankView {
   std::vector<GasView> gases;            ///< over the tank, at equilibrium
   std::vector<Headroom> headroom;
   std::vector<IndicatorValue> indicators;
-  std::vector<std::string> warnings;  ///< out of range, estimated or missing interactions that matter here
+  std::string_view model;             ///< of the activity coefficients
+  bool valid = true;                  ///< false: indicative only, a warning says why
+  std::vector<std::string> missing;   ///< interactions nobody published that matter here
+  std::vector<std::string> warnings;  ///< those, and estimates, ranges left, doubts about the density
 };
 
 /// What one kg of a stock chemical brings into the solution.
