@@ -10,11 +10,12 @@ namespace bathwright::sheets {
 namespace {
 
 Lines indicators(const bath::BathType& type, const std::vector<bath::IndicatorValue>& values) {
-  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"state"}, {"what it says"}});
-  for (const auto& v : values)
+  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"what it says"}});
+  for (const auto& v : values) {
+    const std::string state = v.value ? std::string(words(standing(type, v.id, *v.value))) : "not available";
     table.add({v.label, v.value ? figure(*v.value) : "", v.unit,
-               v.value ? std::string(words(standing(type, v.id, *v.value))) : "not available",
-               v.value ? v.meaning : v.note});
+               (state.empty() ? "" : state + ". ") + (v.value ? v.meaning : v.note)});
+  }
   return table.lines();
 }
 

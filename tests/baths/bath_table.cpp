@@ -75,7 +75,8 @@ std::vector<Row> demonstration_tanks() {
     const auto run = bench.run("tank '" + file.string() + "' --json");
     Row row{"baths/" + file.filename().string(), run.status, run.err, run.json(), {}};
     if (row.tank.is_object() && row.tank.contains("bath_type"))
-      row.type = bench.run("plugins show '" + row.tank.at("bath_type").get<std::string>() + "' --json").json();
+      row.type =
+          bench.run("plugins show '" + row.tank.at("bath_type").get<std::string>() + "' --json").json();
     rows.push_back(std::move(row));
   }
   return rows;
@@ -101,8 +102,8 @@ std::string markdown(const std::vector<Row>& rows) {
     text += fmt::format("| {} | {} | {} | {} | {} | {} | {} | {} | {} | {} | {} | {} | {} | {} |\n",
                         t.at("bath_type").get<std::string>(), row.file,
                         figure(number(t.at("temperature_C")), "{:g}"), figure(number(t.at("pH"))),
-                        range(window(row.type, "pH")), figure(number(t.at("ionic_strength"))), key_species(row),
-                        tightest(t, "working_log10"), tightest(t, "idle_log10"),
+                        range(window(row.type, "pH")), figure(number(t.at("ionic_strength"))),
+                        key_species(row), tightest(t, "working_log10"), tightest(t, "idle_log10"),
                         figure(number(t.at("density_kg_per_L")), "{:.3f}"), t.at("model").get<std::string>(),
                         t.at("valid").get<bool>() ? "yes" : "no", t.at("warnings").size(),
                         t.at("missing_interactions").size());

@@ -8,10 +8,10 @@
 namespace bath_table {
 
 struct Row {
-  std::string file;             ///< baths/n-07.toml
-  int status = -1;              ///< of `bathwright tank FILE --json`
-  std::string message;          ///< to standard error
-  nlohmann::json tank, type;    ///< of `tank`, and of `plugins show` for its bath type
+  std::string file;           ///< baths/n-07.toml
+  int status = -1;            ///< of `bathwright tank FILE --json`
+  std::string message;        ///< to standard error
+  nlohmann::json tank, type;  ///< of `tank`, and of `plugins show` for its bath type
 };
 
 /// Every tank file of baths/, by file name.
