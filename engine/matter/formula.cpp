@@ -5,6 +5,7 @@
 #include <cmath>
 #include <map>
 #include <numeric>
+#include <set>
 
 #include "elements.hpp"
 
@@ -61,6 +62,7 @@ class Parser {
   Composition atoms;
   int charge = 0;
   double crystal_water = 0;
+  std::set<std::string> ligands;
   Problem problem;
 
  private:
@@ -183,6 +185,7 @@ class Parser {
     if (!atoms_of.formula())
       return fail("the table's own formula of " + ligand->token + " cannot be read", "");
     unit = atoms_of.atoms;
+    ligands.insert(ligand->token);
     at_ = end;
     return true;
   }
@@ -249,6 +252,7 @@ Result<Formula> Formula::parse(std::string_view text, std::string_view where) {
   formula.text_ = std::string(text);
   formula.charge_ = parser.charge;
   formula.crystal_water_ = parser.crystal_water;
+  formula.ligands_.assign(parser.ligands.begin(), parser.ligands.end());
   for (const Element& element : elements()) {
     const auto found = parser.atoms.find(element.atomic_number);
     if (found == parser.atoms.end()) continue;
@@ -270,6 +274,7 @@ Formula Formula::salt(const Formula& cation, const Formula& anion) {
   }
   salt.molar_mass_ = cations * cation.molar_mass() + anions * anion.molar_mass();
   salt.crystal_water_ = cations * cation.crystal_water() + anions * anion.crystal_water();
+  std::ranges::set_union(cation.ligands(), anion.ligands(), std::back_inserter(salt.ligands_));
   return salt;
 }
 

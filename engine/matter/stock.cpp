@@ -9,8 +9,10 @@ namespace {
 StockChemical chemical_of(const data::CsvRow& row) {
   StockChemical c;
   c.id = row["id"];
+  c.aliases = row.list("aliases");
   c.name = row["name"];
   c.formula = row["formula"];
+  c.cas = row["cas"];
   c.liquid = row["liquid"] == "yes";
   c.assay = row.number("assay");
   c.kg_per_L = row.number("kg_per_L");
@@ -21,12 +23,6 @@ StockChemical chemical_of(const data::CsvRow& row) {
   c.note = row["note"];
   c.source = row["source"];
   return c;
-}
-
-template <class T>
-const T* find_by_id(const std::vector<T>& all, std::string_view id) {
-  const auto found = std::ranges::find(all, id, &T::id);
-  return found == all.end() ? nullptr : &*found;
 }
 
 }  // namespace
@@ -58,7 +54,12 @@ const StockCatalogue& StockCatalogue::built_in() {
   return catalogue;
 }
 
-const StockChemical* StockCatalogue::find(std::string_view id) const { return find_by_id(chemicals_, id); }
+const StockChemical* StockCatalogue::find(std::string_view id) const {
+  const auto found = std::ranges::find_if(chemicals_, [&](const StockChemical& c) {
+    return c.id == id || std::ranges::count(c.aliases, id) > 0;
+  });
+  return found == chemicals_.end() ? nullptr : &*found;
+}
 
 std::vector<std::string> StockCatalogue::ids() const {
   std::vector<std::string> all;
@@ -74,7 +75,8 @@ std::string StockCatalogue::hazard_text(std::string_view code) const {
 }
 
 const Incompatibility* StockCatalogue::incompatibility(std::string_view id) const {
-  return find_by_id(incompatibilities_, id);
+  const auto found = std::ranges::find(incompatibilities_, id, &Incompatibility::id);
+  return found == incompatibilities_.end() ? nullptr : &*found;
 }
 
 }  // namespace bathwright::matter

@@ -59,6 +59,16 @@ std::optional<Eigen::VectorXd> coefficients(const Formula& formula,
   return x;
 }
 
+/// Whether every ligand the formula names by its token is named by a chosen species too: a saccharinate is no
+/// mixture that happens to have its atoms.
+bool keeps_ligands(const Formula& formula, const std::vector<const Candidate*>& chosen) {
+  return std::ranges::all_of(formula.ligands(), [&](const std::string& ligand) {
+    return std::ranges::any_of(chosen, [&](const Candidate* species) {
+      return std::ranges::count(species->formula.ligands(), ligand) > 0;
+    });
+  });
+}
+
 /// Species of `names` that hold only elements of the formula, and at least one besides H and O.
 std::vector<Candidate> candidates(const Formula& formula, const std::vector<std::string>& names) {
   const std::set<std::string> wanted = heavy_elements(formula);
@@ -121,7 +131,7 @@ Result<Parts> parts_of(const Formula& formula, const Equilibria& equilibria) {
   Parts parts;
   double least_water = std::numeric_limits<double>::infinity();
   each_set(candidates(formula, equilibria.basis()), [&](const auto& chosen) {
-    const auto x = coefficients(formula, chosen, true);
+    const auto x = keeps_ligands(formula, chosen) ? coefficients(formula, chosen, true) : std::nullopt;
     if (!x) return;
     const auto n = static_cast<Eigen::Index>(chosen.size());
     const double protons = (*x)(n), water = (*x)(n + 1), made = std::abs(water - formula.crystal_water());

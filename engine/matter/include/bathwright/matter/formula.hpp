@@ -42,6 +42,7 @@ class Formula {
   /// atomic_weights.csv.
   [[nodiscard]] units::GramsPerMole molar_mass() const { return molar_mass_; }
   [[nodiscard]] double crystal_water() const { return crystal_water_; }  ///< H2O per formula unit after a dot
+  [[nodiscard]] const std::vector<std::string>& ligands() const { return ligands_; }  ///< tokens, sorted
   [[nodiscard]] std::string pretty() const;  ///< for people, UTF-8: Ni²⁺, CuSO₄·5H₂O
 
  private:
@@ -50,6 +51,7 @@ class Formula {
   int charge_ = 0;
   units::GramsPerMole molar_mass_{};
   double crystal_water_ = 0;
+  std::vector<std::string> ligands_;
 };
 
 /// Whether two formulae have the same atoms (counts within 1e-9), however they are written; charge is not

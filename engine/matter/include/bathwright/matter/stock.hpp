@@ -13,9 +13,11 @@
 namespace bathwright::matter {
 
 struct StockChemical {
-  std::string id;    ///< "nickel-sulfate"
-  std::string name;  ///< "nickel sulfate hexahydrate"
+  std::string id;                    ///< "nickel-sulfate"
+  std::vector<std::string> aliases;  ///< other ids in use, accepted everywhere
+  std::string name;                  ///< "nickel sulfate hexahydrate"
   std::string formula;
+  std::string cas;  ///< registry number, "10101-97-0"
   bool liquid = false;
   double assay = 1;                                            ///< kg of `formula` per kg of product
   double kg_per_L = std::numeric_limits<double>::quiet_NaN();  ///< liquids at 20 degC; NaN for solids
@@ -43,7 +45,8 @@ class StockCatalogue {
   /// The catalogue compiled into the program (matter/stock_chemicals.csv and its two companions).
   static const StockCatalogue& built_in();
 
-  [[nodiscard]] const StockChemical* find(std::string_view id) const;  ///< null where there is none
+  /// The chemical of this id or alias; null where there is none.
+  [[nodiscard]] const StockChemical* find(std::string_view id) const;
   [[nodiscard]] std::vector<std::string> ids() const;                  ///< sorted
   [[nodiscard]] std::string hazard_text(std::string_view code) const;  ///< "" for an unknown code
   [[nodiscard]] const Incompatibility* incompatibility(std::string_view id) const;

@@ -13,7 +13,8 @@ struct Parts {
   double water = 0;   ///< mol of H2O per mol of formula; may be negative (anhydrides)
 };
 
-/// Fails when no set of up to four basis species makes up the formula, naming the elements nobody knows.
+/// A formula is read by its atoms; a ligand that it names by its token stays whole. Fails when no set of up
+/// to four basis species makes it up, naming the elements nobody knows.
 Result<Parts> parts_of(const matter::Formula& formula, const Equilibria& equilibria);
 
 /// The ions a salt, strong acid or strong base is counted as when "fully dissociated": NaH2PO4 -> Na^+,
