@@ -392,10 +392,8 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
   return state;
 }
 
-Result<Brings> Chemistry::brings(const matter::StockChemical& stock) const {
-  const auto formula = matter::Formula::parse(stock.formula, stock.id);
-  if (!formula) return formula.problems();
-  auto parts = speciation::parts_of(*formula, prepared_->equilibria);
+Result<Brings> Chemistry::brings_per_mol(const matter::Formula& formula) const {
+  auto parts = speciation::parts_of(formula, prepared_->equilibria);
   if (!parts) return parts.problems();
   speciation::Parts brought = *std::move(parts);
   // Carbonate leaves an acid bath as carbon dioxide: CO3^2- + 2 H^+ -> CO2 + H2O.
@@ -405,18 +403,32 @@ Result<Brings> Chemistry::brings(const matter::StockChemical& stock) const {
     brought.water += carbonate->second;
     brought.basis.erase(carbonate);
   }
-  const double mol_per_kg = stock.mol_per_kg();
   Brings result;
   result.component_mol.assign(components().size(), 0);
   for (const auto& [name, count] : brought.basis) {
     const auto at = prepared_->system->component(name);
     if (!at)
-      return Problem{Fault::out_of_range, stock.id,
+      return Problem{Fault::out_of_range, formula.text(),
                      "brings " + name + ", which is not a component of " + prepared_->type.name, "",
                      "Leave it off the shelf of this tank, or use a bath type that knows it."};
-    result.component_mol[*at] += count * mol_per_kg;
+    result.component_mol[*at] += count;
   }
-  result.water_kg = stock.water_kg_per_kg() + brought.water * mol_per_kg * activity::water_kg_per_mol;
+  result.water_kg = brought.water * activity::water_kg_per_mol;
+  return result;
+}
+
+Result<Brings> Chemistry::brings(const matter::StockChemical& stock) const {
+  const auto formula = matter::Formula::parse(stock.formula, stock.id);
+  if (!formula) return formula.problems();
+  auto brought = brings_per_mol(*formula);
+  if (!brought) {
+    Problems problems = brought.problems();
+    for (Problem& problem : problems) problem.where = stock.id;
+    return problems;
+  }
+  Brings result = *std::move(brought);
+  for (double& mol : result.component_mol) mol *= stock.mol_per_kg();
+  result.water_kg = stock.water_kg_per_kg() + result.water_kg * stock.mol_per_kg();
   return result;
 }
 

@@ -60,10 +60,10 @@ struct TankView {
   std::vector<std::string> warnings;  ///< those, and estimates, ranges left, doubts about the density
 };
 
-/// What one kg of a stock chemical brings into the solution.
+/// What a unit of something brings into the solution: a kg of a stock chemical, a mol of a formula.
 struct Brings {
-  std::vector<double> component_mol;  ///< per kg of product
-  double water_kg = 0;                ///< per kg of product, crystal water included
+  std::vector<double> component_mol;  ///< per unit
+  double water_kg = 0;                ///< per unit, crystal water included
 };
 
 class Chemistry {
@@ -109,6 +109,8 @@ class Chemistry {
                                              std::optional<double> pH, units::Litres volume,
                                              units::Celsius temperature) const;
 
+  /// What a mol of a formula brings; an ion brings its charge with it. Fails as brings().
+  [[nodiscard]] Result<Brings> brings_per_mol(const matter::Formula& formula) const;
   /// What a kg of a product brings. Fails when its substance needs a component the bath type does not have.
   [[nodiscard]] Result<Brings> brings(const matter::StockChemical& stock) const;
 

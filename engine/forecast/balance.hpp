@@ -1,0 +1,80 @@
+// What a policy does to the amounts in a tank, hour by hour: rates compiled once, then exact steps.
+#pragma once
+
+#include <bathwright/bath/chemistry.hpp>
+#include <bathwright/forecast/forecast.hpp>
+
+namespace bathwright::forecast {
+
+/// mol of each component and kg of water, of anything that goes in or out.
+struct Amounts {
+  std::vector<double> mol;
+  double water_kg = 0;
+
+  void add(const Amounts& other, double times);
+};
+
+/// One of the bath type's uses in amounts.
+struct CompiledUse {
+  const bath::Use* use = nullptr;
+  Amounts effects;          ///< per unit, charge made up in H^+
+  Amounts metal;            ///< per mol of metal that goes into solution, charge made up in H^+
+  double mol_per_unit = 0;  ///< of metal per unit at full efficiency
+};
+
+/// Metal that a use takes out of solution, mol per unit (anodes that dissolve give it back), and its effects.
+Amounts per_unit(const CompiledUse& use, double effects_factor, double efficiency_factor);
+
+/// Metal that a use deposits, mol per unit, whatever the anodes give back.
+double deposited_mol(const CompiledUse& use, double efficiency_factor);
+
+/// Everything of a policy that does not change during a run, in amounts.
+struct Compiled {
+  std::vector<int> charge;  ///< per component
+  std::vector<CompiledUse> uses;
+  std::vector<std::size_t> work;    ///< per Policy::work: position in uses
+  std::vector<std::size_t> always;  ///< uses counted by the hour or by surface and hour
+  Amounts water, drag_in;           ///< per litre
+  struct Feed {
+    const Replenishment* rule = nullptr;
+    Amounts per_kg;
+    double price_per_kg = 0;
+    std::size_t use = 0;                       ///< of rules by use
+    const bath::Quantity* quantity = nullptr;  ///< of rules by analysis; nullptr is the pH
+    double aim = 0;                            ///< g/L, or pH
+  };
+  std::vector<Feed> feeds;
+  struct Freeze {
+    const FreezeOut* rule = nullptr;
+    const bath::Quantity* quantity = nullptr;
+    Amounts per_mol;  ///< of crystals
+  };
+  std::vector<Freeze> freezes;
+};
+
+Result<Compiled> compile(const bath::Tank& tank, const bath::Chemistry& chemistry, const Policy& policy);
+
+/// Rates over a stretch of hours in which nothing changes but the amounts.
+struct Rates {
+  double loss_per_h = 0;                             ///< k: share of the tank that leaves in an hour
+  Amounts in_per_h;                                  ///< p
+  double drag_out_L = 0, bleed_L = 0, top_up_L = 0;  ///< per hour
+  double cost = 0, deposited_mol = 0;                ///< per hour
+};
+
+Rates rates(const bath::Tank& tank, const Compiled& compiled, const Policy& policy, const Draw& draw,
+            bool works);
+
+/// What a stretch did, for the balance of the whole run.
+struct Moved {
+  std::vector<double> in_mol, out_mol;
+};
+
+/// The exact step over `hours`, then water to the mark. Fails when the salts leave no room for water.
+Outcome advance(bath::TankState& state, const Rates& rates, double hours, double volume_L,
+                const bath::Chemistry& chemistry, Moved& moved);
+
+/// Water until the tank stands at `volume_L`.
+Outcome fill(bath::TankState& state, double volume_L, const bath::Chemistry& chemistry);
+
+}  // namespace bathwright::forecast
