@@ -1,6 +1,7 @@
 #include "shop.hpp"
 
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/described/bath_type_file.hpp>
 #include <bathwright/plugin_host/discovery.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
@@ -49,7 +50,7 @@ Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
 plugin_host::BathTypes known_bath_types(const Context& context) {
   std::vector<std::filesystem::path> folders = plugin_host::built_in_folders();
   folders.insert(folders.end(), context.plugin_folders.begin(), context.plugin_folders.end());
-  return plugin_host::BathTypes::discover(folders);
+  return plugin_host::BathTypes::discover(folders, described::read_bath_type_file);
 }
 
 Result<Shop> open_shop(const Context& context, const std::string& tank_path) {

@@ -246,10 +246,13 @@ Result<TankView> Chemistry::view(const TankState& state) const {
     names.push_back(species.name);
     activity.push_back(std::pow(10, species.log10_activity));
   }
+  std::vector<std::string> solids;
+  for (const speciation::SystemSolid& solid : p.system->solids()) solids.push_back(solid.name);
   for (const Indicator& indicator : p.type.indicators) {
     IndicatorValue value{indicator.id, indicator.label, indicator.meaning, indicator.unit, std::nullopt, {}};
     const auto result = indicator.evaluate({state.temperature.v, view.volume_L, view.pH, view.ionic_strength,
-                                            view.quantity_g_per_L, now->molality, activity, names});
+                                            view.quantity_g_per_L, now->molality, activity, names,
+                                            now->water_kg, solids, now->saturation_index});
     if (result)
       value.value = *result;
     else

@@ -60,6 +60,7 @@ class Reader {
     if (!report_.problems().empty()) return report_.problems();
     return std::move(out_);
   }
+  [[nodiscard]] const std::vector<Place>& places() const { return report_.places(); }
 
  private:
   /// The id, or what stands for it where there is no sound one.
@@ -68,7 +69,7 @@ class Reader {
     return sound ? type.id : "bath type";
   }
 
-  std::string text(Place place, const char* stated, Need need, Length length = Length::usual) {
+  std::string text(const Place& place, const char* stated, Need need, Length length = Length::usual) {
     const auto longest = static_cast<std::size_t>(length);
     const std::string_view found(stated ? stated : "", stated ? ::strnlen(stated, longest + 1) : 0);
     if (found.empty() && need == Need::required) report_.add(place, "is missing", "text");
@@ -83,7 +84,7 @@ class Reader {
     return std::string(found);
   }
 
-  matter::Formula formula(Place place, const std::string& stated) {
+  matter::Formula formula(const Place& place, const std::string& stated) {
     if (stated.empty()) return {};
     auto parsed = matter::Formula::parse(stated);
     if (parsed) return *std::move(parsed);
@@ -92,31 +93,31 @@ class Reader {
     return {};
   }
 
-  const bath::Source* source(Place place, std::uint32_t row) {
+  const bath::Source* source(const Place& place, std::uint32_t row) {
     if (row >= 1 && row <= out_.sources.size()) return &out_.sources[row - 1];
     report_.add(place, row == 0 ? "no source is given" : "there is no source " + std::to_string(row),
                 "a row of sources, 1 to " + std::to_string(out_.sources.size()));
     return nullptr;
   }
-  std::string source_key(Place place, std::uint32_t row) {
+  std::string source_key(const Place& place, std::uint32_t row) {
     const bath::Source* found = source(place, row);
     return found ? found->key : "";
   }
 
-  double number(Place place, double stated, double low, double high) {
+  double number(const Place& place, double stated, double low, double high) {
     if (!(stated >= low && stated <= high))
       report_.add(place, std::isnan(stated) ? "is unknown" : "is out of range",
                   std::to_string(low) + " to " + std::to_string(high));
     return stated;
   }
-  double known_or_nan(Place place, double stated) {
+  double known_or_nan(const Place& place, double stated) {
     if (std::isinf(stated)) report_.add(place, "is infinite", "a number, or NaN where there is none");
     return stated;
   }
 
   /// A code that the host must understand; roles, qualities and flags it does not know are no error (rule
   /// R2).
-  void code(Place place, std::uint32_t stated, std::uint32_t last) {
+  void code(const Place& place, std::uint32_t stated, std::uint32_t last) {
     if (stated < 1 || stated > last)
       report_.add(place, "the code " + std::to_string(stated) + " is not known",
                   "1 to " + std::to_string(last));
@@ -135,7 +136,7 @@ class Reader {
     return {log10_K.value, or_zero(dH.value), or_zero(dCp.value), or_zero(log10_K.spread),
             !std::isnan(dH.value)};
   }
-  std::string citation(Place place, const bw_datum& datum) {
+  std::string citation(const Place& place, const bw_datum& datum) {
     const bath::Source* found = source(place, datum.source);
     return found ? found->citation : "";
   }
@@ -210,7 +211,7 @@ class Reader {
     }
   }
 
-  speciation::Composition terms(Place place, const bw_term* first, std::uint32_t count) {
+  speciation::Composition terms(const Place& place, const bw_term* first, std::uint32_t count) {
     constexpr std::uint32_t most_terms = 64;
     speciation::Composition composition;
     if (count > most_terms || (count > 0 && !first)) {
@@ -387,7 +388,7 @@ class Reader {
            source_key({table, n, "source"}, row.source)});
     }
   }
-  void quantity_of(Place place, const std::string& id) {
+  void quantity_of(const Place& place, const std::string& id) {
     if (!out_.quantity(id)) report_.add(place, "'" + id + "' is not a quantity", "the id of a quantity");
   }
 
@@ -398,13 +399,17 @@ class Reader {
 
 }  // namespace
 
-Result<bath::BathType> read_bath_type(const bw_bath_type& stated) {
+Result<bath::BathType> read_bath_type(const bw_bath_type& stated, std::vector<Place>* places) {
+  if (places) places->assign(1, {});
   if (stated.size < smallest_type || stated.size > largest_row || stated.size % 8 != 0)
     return Problem{
         Fault::inconsistent_data, "bath type size",
         "a bath type of " + std::to_string(stated.size) + " bytes",
         "sizeof(bw_bath_type): at least " + std::to_string(smallest_type) + " bytes, a multiple of 8", ""};
-  return Reader(stated).read();
+  Reader reader(stated);
+  auto type = reader.read();
+  if (places) *places = reader.places();
+  return type;
 }
 
 }  // namespace bathwright::plugin_host

@@ -32,7 +32,7 @@ class OwnReactions {
     known_.emplace_back("H2O");
   }
 
-  void check(Place place, const std::string& text, const std::string& formed_or_dissolved) {
+  void check(const Place& place, const std::string& text, const std::string& formed_or_dissolved) {
     if (text.empty()) return;
     const auto reaction = speciation::parse_reaction(text, "");
     if (!reaction)
@@ -50,7 +50,7 @@ class OwnReactions {
   }
 
  private:
-  bool take(Place place, const std::vector<Term>& side, double sign, const std::string& own_name,
+  bool take(const Place& place, const std::vector<Term>& side, double sign, const std::string& own_name,
             Imbalance& difference) {
     bool readable = true;
     for (const Term& term : side) {
@@ -80,6 +80,18 @@ class OwnReactions {
   Report& report_;
   std::vector<std::string> known_;
 };
+
+/// The own species or solid that `where` names.
+Place own_row(const bath::BathType& type, const std::string& where) {
+  const auto row = [&](const auto& rows) {
+    return 1 + std::ranges::find_if(rows, [&](const auto& stated) { return stated.where == where; }) -
+           rows.begin();
+  };
+  const std::size_t species = row(type.own_species), solid = row(type.own_solids);
+  if (species <= type.own_species.size()) return {"own_species", species, ""};
+  if (solid <= type.own_solids.size()) return {"own_solids", solid, ""};
+  return {"", 0, where};
+}
 
 void check_own_reactions(const bath::BathType& type, Report& report) {
   OwnReactions reactions(type, report);
@@ -159,9 +171,7 @@ void check_chemistry(const bath::BathType& type, Report& report) {
       Equilibria::built_in(type.convention, type.sets.zinc).with(type.own_species, type.own_solids);
   if (!all) {
     for (const Problem& problem : all.problems()) {
-      // The report names the type itself.
-      const std::size_t id = problem.where.starts_with(type.id + ' ') ? type.id.size() + 1 : 0;
-      report.add({"", 0, problem.where.c_str() + id}, problem.what, problem.expected, problem.try_this);
+      report.add(own_row(type, problem.where), problem.what, problem.expected, problem.try_this);
     }
     return;
   }

@@ -4,6 +4,15 @@
 namespace bathwright::plugin_host {
 namespace fs = std::filesystem;
 
+namespace {
+
+bool is_bath_type(const fs::path& file) {
+  const std::string name = file.filename().string();
+  return name.ends_with(plugin_suffix) || name.ends_with(data_suffix);
+}
+
+}  // namespace
+
 std::vector<fs::path> built_in_folders() {
   std::error_code failed;
   const fs::path program = fs::read_symlink("/proc/self/exe", failed);
@@ -22,8 +31,7 @@ FoundFiles find_plugin_files(const std::vector<fs::path>& folders) {
     std::error_code failed;
     std::vector<fs::path> here;
     for (fs::directory_iterator entry(folder, failed), end; !failed && entry != end; entry.increment(failed))
-      if (entry->path().filename().string().ends_with(plugin_suffix))
-        here.push_back(fs::absolute(entry->path()));
+      if (is_bath_type(entry->path())) here.push_back(fs::absolute(entry->path()));
     if (failed)
       found.problems.push_back({Fault::io, folder.string(),
                                 "cannot read this folder of plugins (" + failed.message() + ")", "",

@@ -25,7 +25,8 @@ void unique(const char* table, const char* field, const Names& names, Report& re
       report.add({table, i + 1, field}, "'" + names[i] + "' stands here a second time", "each once");
 }
 
-void one_of(Place place, const std::string& name, const Names& known, const char* kind, Report& report) {
+void one_of(const Place& place, const std::string& name, const Names& known, const char* kind,
+            Report& report) {
   if (name.empty() || std::ranges::find(known, name) != known.end()) return;
   const auto near = nearest(name, known);
   report.add(place, "'" + name + "' is not " + kind, "", near ? "Did you mean '" + *near + "'?" : "");

@@ -2,7 +2,21 @@
 #include <bathwright/plugin_host/discovery.hpp>
 #include <bathwright/plugin_host/registry.hpp>
 
+#include "file_trust.hpp"
+
 namespace bathwright::plugin_host {
+namespace {
+
+bool is_data(const std::filesystem::path& file) { return file.string().ends_with(data_suffix); }
+
+Result<LoadedPlugin> load_data(const std::filesystem::path& file, ReadDataFile read) {
+  if (Outcome trusted = may_be_run(file); !trusted) return trusted.problems();
+  auto type = read(file.string());
+  if (!type) return type.problems();
+  return LoadedPlugin{file, {*std::move(type)}, {}};
+}
+
+}  // namespace
 
 std::string_view name(State state) {
   switch (state) {
@@ -16,13 +30,15 @@ std::string_view name(State state) {
   return "refused";
 }
 
-BathTypes BathTypes::discover(const std::vector<std::filesystem::path>& folders) {
+BathTypes BathTypes::discover(const std::vector<std::filesystem::path>& folders,
+                              ReadDataFile read_data_file) {
   BathTypes known;
   const FoundFiles found = find_plugin_files(folders);
   for (const Problem& problem : found.problems)
     known.list_.push_back({problem.where, "", "", State::refused, {problem}, {}});
   for (const auto& file : found.files) {
-    if (auto plugin = load(file))
+    if (is_data(file) && !read_data_file) continue;
+    if (auto plugin = is_data(file) ? load_data(file, read_data_file) : load(file))
       known.take(*std::move(plugin));
     else
       known.list_.push_back({file, "", "", State::refused, plugin.problems(), {}});

@@ -8,6 +8,13 @@ struct bw_bath_type;
 
 namespace bathwright::plugin_host {
 
+/// A field of a bath type's tables. Row 1 is the first; row 0 stands for a field of the bath type itself.
+struct Place {
+  std::string table;
+  std::size_t row = 0;
+  std::string field;
+};
+
 /// Copies and checks a plugin's tables. Fails with every problem found, each naming plugin, table, row (1 is
 /// the first) and field:
 ///   sizes        rows at least as long as in version 1.0; longer rows are read as far as they are known
@@ -17,7 +24,8 @@ namespace bathwright::plugin_host {
 ///   chemistry    formulae read; own reactions conserve atoms and charge; components are basis species, one
 ///                found by charge and H^+ by pH; watched solids exist and can form from the components
 ///   safety       cyanide, chromium(VI), fluoride or peroxide only with a caution of level stop
-/// Keeps of the plugin nothing but its functions.
-Result<bath::BathType> read_bath_type(const bw_bath_type& stated);
+/// Keeps of the plugin nothing but its functions. `places` becomes the place of each problem, in their order,
+/// for a caller who can say it better.
+Result<bath::BathType> read_bath_type(const bw_bath_type& stated, std::vector<Place>* places = nullptr);
 
 }  // namespace bathwright::plugin_host

@@ -22,11 +22,17 @@ struct Listed {
   std::vector<std::string> notes;  ///< what the plugin had to say while loading
 };
 
+/// Reads a .bathtype.toml file; engine/described has the one there is.
+using ReadDataFile = Result<bath::BathType> (*)(const std::string& path);
+
 class BathTypes {
  public:
   /// Loads every plugin of the folders, earlier folders first (discovery.hpp). A plugin that cannot be used
   /// is listed with its problems and hinders no other.
-  static BathTypes discover(const std::vector<std::filesystem::path>& folders);
+  /// A file of data is read by `read_data_file`, and passed over where there is none; others must not be
+  /// able to write it either.
+  static BathTypes discover(const std::vector<std::filesystem::path>& folders,
+                            ReadDataFile read_data_file = nullptr);
 
   [[nodiscard]] const bath::BathType* find(std::string_view id) const;  ///< nullptr if there is none
   [[nodiscard]] const std::vector<bath::BathType>& ready() const { return types_; }  ///< in the order found

@@ -1,4 +1,4 @@
-#include "toml_text.hpp"
+#include <bathwright/toml_schema/toml_text.hpp>
 
 #include <fmt/format.h>
 #include <toml++/toml.h>
@@ -11,11 +11,11 @@
 #include <fstream>
 #include <optional>
 
-namespace bathwright::shopfiles {
+namespace bathwright::toml_schema {
 namespace {
 
 // The TOML library frees a tree by recursion, one step a level, and a tree cannot be deeper than the text has
-// dots and opening brackets. So many steps fit any stack; a shop file has a few hundred.
+// dots and opening brackets. So many steps fit any stack; a real file has a few hundred.
 constexpr std::ptrdiff_t most_dots_and_brackets = 4000;
 
 bool is_control(char c) { return (c >= 0 && c < 0x20) || c == 0x7f; }
@@ -29,7 +29,7 @@ int line_of(std::string_view text, std::size_t position) {
 std::optional<Problem> unfit(std::string_view name, std::string_view text) {
   const std::string whole{name};
   if (text.size() > longest_file_bytes) {
-    return Problem{Fault::bad_input, whole, "is larger than 1 MiB", "a shop file of a few kilobytes", ""};
+    return Problem{Fault::bad_input, whole, "is larger than 1 MiB", "a file of a few kilobytes", ""};
   }
   if (const auto zero = text.find('\0'); zero != text.npos) {
     return Problem{Fault::bad_input, at_line(name, line_of(text, zero)),
@@ -40,7 +40,7 @@ std::optional<Problem> unfit(std::string_view name, std::string_view text) {
       most_dots_and_brackets) {
     return Problem{Fault::bad_input, whole,
                    fmt::format("more than {} dots and brackets", most_dots_and_brackets),
-                   "a shop file, nested three levels at most", ""};
+                   "a file nested three levels at most", ""};
   }
   return std::nullopt;
 }
@@ -98,6 +98,7 @@ class Converter {
           from.is_integer() ? static_cast<double>(from.as_integer()->get()) : from.as_floating_point()->get();
     } else if (from.is_boolean()) {
       node.kind = Node::Kind::truth;
+      node.truth = from.as_boolean()->get();
     } else {
       node.kind = Node::Kind::moment;
       const auto* moment = from.as_date_time();
@@ -148,7 +149,7 @@ Result<Node> parse_toml(std::string_view name, std::string_view text) {
     const toml::table root = toml::parse(text, name);
     if (root.empty()) {
       return Problem{Fault::bad_input, at_line(name, 1), "holds no key at all",
-                     "keys as baths/README.md lists them", ""};
+                     "keys, as the README.md for this kind of file lists them", ""};
     }
     Converter converter(name);
     Node tree = converter.convert(root, "", 1, 0);
@@ -161,4 +162,4 @@ Result<Node> parse_toml(std::string_view name, std::string_view text) {
   }
 }
 
-}  // namespace bathwright::shopfiles
+}  // namespace bathwright::toml_schema

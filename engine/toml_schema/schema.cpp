@@ -1,11 +1,12 @@
-#include "schema.hpp"
+#include <bathwright/toml_schema/schema.hpp>
 
 #include <fmt/format.h>
 
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
+#include <limits>
 
-namespace bathwright::shopfiles {
+namespace bathwright::toml_schema {
 namespace {
 
 std::string shown(const Node& node) {
@@ -52,7 +53,9 @@ int Table::line(std::string_view name) const {
 }
 
 std::string Table::where(std::string_view name) const {
-  return at_line(document_->name_, line(name)) + ": " + path_ + printable(name);
+  std::string place = path_ + printable(name);
+  if (name.empty() && !place.empty()) place.pop_back();  // the dot
+  return at_line(document_->name_, line(name)) + ": " + place;
 }
 
 std::string Table::written(std::string_view name) const {
@@ -66,6 +69,12 @@ void Table::report(std::string_view name, std::string what, std::string expected
 
 void Table::report(std::string_view name, const Problems& problems) {
   for (const Problem& problem : problems) document_->problems_.emplace(line(name), problem);
+}
+
+bool Table::reported(std::string_view name) const {
+  const auto [first, last] = document_->problems_.equal_range(line(name));
+  const std::string place = where(name);
+  return std::any_of(first, last, [&](const auto& entry) { return entry.second.where == place; });
 }
 
 const Node* Table::any(const Key& key) {
@@ -118,6 +127,16 @@ std::optional<double> Table::number(const Key& key, Range range) {
   return std::nullopt;
 }
 
+std::optional<double> Table::number(const Key& key) {
+  constexpr double largest = std::numeric_limits<double>::max();
+  return number(key, {-largest, largest});
+}
+
+bool Table::truth(const Key& key) {
+  const Node* item = of_kind(key, Node::Kind::truth, "true or false");
+  return item && item->truth;
+}
+
 const std::string* Table::number_with_unit(const Key& key) {
   const Node* item = any(key);
   if (!item) return nullptr;
@@ -165,4 +184,4 @@ Problems Document::problems_by_line() {
   return all;
 }
 
-}  // namespace bathwright::shopfiles
+}  // namespace bathwright::toml_schema

@@ -1,5 +1,4 @@
-// A TOML text as a tree of plain values, each with its line. The only door to the TOML library. Private to
-// shopfiles. Read next: schema.hpp, which asks a tree for the keys of a file type.
+// A TOML text as a tree of plain values, each with its line. The only door to the TOML library. Read next: schema.hpp, which asks a tree for the keys of a file type.
 #pragma once
 
 #include <bathwright/base/result.hpp>
@@ -8,7 +7,7 @@
 #include <string_view>
 #include <vector>
 
-namespace bathwright::shopfiles {
+namespace bathwright::toml_schema {
 
 struct Node {
   enum class Kind { text, number, truth, moment, list, table };
@@ -17,6 +16,7 @@ struct Node {
   std::string key;          ///< under which it stands in a table; empty in a list and for the whole file
   std::string text;         ///< of text; of a local date and time in ISO 8601, empty for other moments
   double number = 0;        ///< of a number
+  bool truth = false;       ///< of true or false
   std::vector<Node> items;  ///< of a list or table, in the order of the file
 };
 
@@ -37,4 +37,4 @@ std::string at_line(std::string_view name, int line);
 /// A key or text from a file, fit for a one-line message: shortened, control characters as "?".
 std::string printable(std::string_view text);
 
-}  // namespace bathwright::shopfiles
+}  // namespace bathwright::toml_schema
