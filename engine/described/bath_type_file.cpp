@@ -1,5 +1,6 @@
 #include <bathwright/described/bath_type_file.hpp>
 #include <bathwright/plugin_host/bath_type_reader.hpp>
+#include <filesystem>
 
 #include "indicator.hpp"
 #include "statement.hpp"
@@ -28,7 +29,11 @@ Result<bath::BathType> read_bath_type_text(std::string_view name, std::string_vi
 Result<bath::BathType> read_bath_type_file(const std::string& path) {
   const auto text = toml_schema::read_text_file(path);
   if (!text) return text.problems();
-  return read_bath_type_text(path, *text);
+  auto type = read_bath_type_text(path, *text);
+  if (type && std::filesystem::path(path).filename() != type->id + ".bathtype.toml")
+    return Problem{Fault::bad_input, path, "holds the bath type '" + type->id + "'",
+                   "the file name " + type->id + ".bathtype.toml", "Rename the file, or change its id."};
+  return type;
 }
 
 }  // namespace bathwright::described

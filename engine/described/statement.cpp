@@ -111,6 +111,7 @@ void Statement::report(const std::vector<plugin_host::Place>& places, const Prob
       const Row& row = rows->second[place.row - 1];
       at.table = row.table;
       if (!row.key.empty()) at.key = row.key;
+      if (place.table == "quantities" && !at.table.has(at.key)) at.key = "id";  // what it stands for
     }
     if (!at.table.reported(at.key)) found.push_back(std::move(at));
   }

@@ -88,8 +88,8 @@ Place own_row(const bath::BathType& type, const std::string& where) {
            rows.begin();
   };
   const std::size_t species = row(type.own_species), solid = row(type.own_solids);
-  if (species <= type.own_species.size()) return {"own_species", species, ""};
-  if (solid <= type.own_solids.size()) return {"own_solids", solid, ""};
+  if (species <= type.own_species.size()) return {"own_species", species, "reaction"};
+  if (solid <= type.own_solids.size()) return {"own_solids", solid, "reaction"};
   return {"", 0, where};
 }
 
@@ -171,6 +171,9 @@ void check_chemistry(const bath::BathType& type, Report& report) {
       Equilibria::built_in(type.convention, type.sets.zinc).with(type.own_species, type.own_solids);
   if (!all) {
     for (const Problem& problem : all.problems()) {
+      const bool told = std::ranges::any_of(
+          report.problems(), [&](const Problem& earlier) { return earlier.what == problem.what; });
+      if (told) continue;  // a reaction that cannot be read
       report.add(own_row(type, problem.where), problem.what, problem.expected, problem.try_this);
     }
     return;

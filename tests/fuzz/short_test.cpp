@@ -21,6 +21,7 @@ const std::vector<Target> targets = {
     {"tank_file", fuzz::tank_file},
     {"readings_file", fuzz::readings_file},
     {"solution_file", fuzz::solution_file},
+    {"described_file", fuzz::described_file, 500},  // as plugin_tables; most inputs are no TOML
     {"formula", fuzz::formula},
     {"quantity", fuzz::quantity},
     {"csv_table", fuzz::csv_table},

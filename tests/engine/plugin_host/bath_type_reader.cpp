@@ -90,7 +90,7 @@ TEST_CASE("each fault of the tables is refused where it stands", "[failure][plug
        [](StatedBath& b) { b.own_species[0].reaction = "Ni^2+ + 2 Cl^- + H2O = NiClOH + H^+"; }},
       {"test-bath own_species row 1 reaction", "'Nj^2+' is no species",
        [](StatedBath& b) { b.own_species[0].reaction = "Nj^2+ + Cl^- + H2O = NiClOH + H^+"; }},
-      {"test-bath own_species row 1", "Ni2Cl^3+ counts an attraction twice",
+      {"test-bath own_species row 1 reaction", "Ni2Cl^3+ counts an attraction twice",
        [](StatedBath& b) {
          b.own_species[0].name = "Ni2Cl^3+";
          b.own_species[0].reaction = "2 Ni^2+ + Cl^- = Ni2Cl^3+";

@@ -14,7 +14,7 @@ namespace bathwright::described {
 /// not known, where what they divide by is not above zero, and on the logarithm of what is not.
 Result<bath::BathType> read_bath_type_text(std::string_view name, std::string_view text);
 
-/// The same for the file at `path`, of at most 1 MiB.
+/// The same for the file at `path`, of at most 1 MiB, which must be named <id>.bathtype.toml.
 Result<bath::BathType> read_bath_type_file(const std::string& path);
 
 }  // namespace bathwright::described
