@@ -49,8 +49,26 @@ double sigma(double x) {
 
 }  // namespace
 
+std::vector<InteractionNote> specific_interaction_left_out(std::span<const Solute> solutes) {
+  constexpr double u_per_molal = 0.25;
+  std::vector<InteractionNote> notes;
+  for (std::uint32_t i = 0; i < solutes.size(); ++i)
+    for (std::uint32_t j = 0; j < solutes.size(); ++j) {
+      if (solutes[i].charge <= 0 || solutes[j].charge >= 0) continue;
+      InteractionNote& note = notes.emplace_back();
+      note.kind = InteractionNote::Kind::accuracy;
+      note.solutes = {i, j};
+      note.text = "the specific interaction of " + solutes[i].name + " - " + solutes[j].name +
+                  ", which the model leaves out";
+      note.u_ln_gamma = -u_per_molal * solutes[i].charge * solutes[j].charge;
+    }
+  return notes;
+}
+
 DaviesModel::DaviesModel(std::span<const Solute> solutes, units::Celsius t)
-    : DaviesModel(kinds_by_charge(solutes), t) {}
+    : DaviesModel(kinds_by_charge(solutes), t) {
+  notes_ = specific_interaction_left_out(solutes);
+}
 
 DaviesModel::DaviesModel(Kinds kinds, units::Celsius t)
     : ActivityModel(std::move(kinds.of)), charge_(std::move(kinds.charge)), slope_ln_(3 * osmotic_slope(t)) {}
@@ -73,7 +91,9 @@ double DaviesModel::evaluate_kinds(std::span<const double> molality, std::span<d
 }
 
 DebyeHueckelModel::DebyeHueckelModel(std::span<const Solute> solutes, units::Celsius t)
-    : DebyeHueckelModel(kinds_by_charge_and_size(solutes, sizes(solutes).pm), sizes(solutes), t) {}
+    : DebyeHueckelModel(kinds_by_charge_and_size(solutes, sizes(solutes).pm), sizes(solutes), t) {
+  for (InteractionNote& note : specific_interaction_left_out(solutes)) notes_.push_back(std::move(note));
+}
 
 DebyeHueckelModel::DebyeHueckelModel(const Kinds& kinds, Sizes sizes, units::Celsius t)
     : ActivityModel(kinds.of),

@@ -7,6 +7,7 @@
 #include <cmath>
 #include <cstdlib>
 #include <map>
+#include <numeric>
 #include <optional>
 #include <set>
 #include <tuple>
@@ -117,6 +118,12 @@ double interpolated(const std::vector<Row>& rows, double t_C, const auto& value)
   return value(*below) + (x - below->t_C) / (above->t_C - below->t_C) * (value(*above) - value(*below));
 }
 
+/// Whether no table reaches the temperature, and a slope, if any, moves the value of 25 degC.
+template <class Row>
+bool moved_by_slope(const Served<Row>& served, Celsius t) {
+  return !served.table || (t.v < reference_C && served.table->front().t_C >= reference_C && served.at_25);
+}
+
 /// Value at t: that of the table, where there is one, else that of 25 degC moved by its slope. Between 25
 /// degC and 25 degrees from it the table is reached gradually, so that every value is continuous in t, the
 /// published one of 25 degC is kept and so is the whole published table from 50 degC on. A table that begins
@@ -126,8 +133,7 @@ template <class Row>
 double at_temperature(const Served<Row>& served, Celsius t, const auto& value, const auto& slope,
                       bool& no_slope) {
   constexpr double negligible_K = 5;
-  if (const auto* table = served.table;
-      table && !(t.v < reference_C && table->front().t_C >= reference_C && served.at_25)) {
+  if (const auto* table = served.table; !moved_by_slope(served, t)) {
     if (t.v < table->front().t_C - negligible_K || t.v > table->back().t_C + negligible_K) no_slope = true;
     const double there = interpolated(*table, t.v, value);
     if (!served.at_25) return there;
@@ -204,7 +210,86 @@ const std::map<std::pair<int, int>, ChargeType>& charge_types() {
 struct Doubts {
   double theta, lambda, psi;  ///< of ln gamma per mol/kg (psi, zeta: per mol2/kg2)
   double slope_per_K;         ///< of ln gamma per mol/kg and K, for each product of charges
+  double fit;  ///< of ln gamma at the end of the range of a published fit, for each product of charges
+  double bend_per_K2;  ///< the same, of what a slope leaves out, per K from 25 degC squared
 };
+
+/// By how much more a table moves 2 B of a pair away from 25 degC than the published slope does; nothing
+/// where one of them does not reach the temperature.
+std::optional<double> table_less_slope(const BinaryRow& row, const std::vector<BinaryRow>& table,
+                                       double t_C) {
+  if (std::isnan(row.slope[0]) || table.size() < 2) return std::nullopt;
+  if (std::min(t_C, reference_C) < table.front().t_C || std::max(t_C, reference_C) > table.back().t_C)
+    return std::nullopt;
+  const auto of = [](const BinaryRow& r, std::array<double, 3> beta) {
+    for (double& b : beta) b = std::isnan(b) ? 0 : b;
+    return twice_B(beta, r.alpha1, r.alpha2);
+  };
+  const auto tabulated = [&](double at_C) {
+    std::array<double, 3> beta{};
+    for (std::size_t k = 0; k < beta.size(); ++k)
+      beta[k] = interpolated(table, at_C, [k](const BinaryRow& r) { return r.value[k]; });
+    return of(table.front(), beta);
+  };
+  const double K = t_C - reference_C;
+  return tabulated(t_C) - tabulated(reference_C) - K * of(row, {row.slope[0], row.slope[1], row.slope[2]});
+}
+
+/// How far the published tables bend away from the published slopes of the same pairs, at 0 and 50 degC: of
+/// 2 B, per product of charges and K^2.
+std::vector<double> bends() {
+  std::vector<double> found;
+  for (const auto& [key, table] : tables().binary) {
+    const auto& [set, cation, anion] = key;
+    const auto main = tables().binary.find({"main", cation, anion});
+    if (set != "warm" || main == tables().binary.end()) continue;
+    const double product = std::abs(charge_in_name(cation) * charge_in_name(anion));
+    for (const double t_C : {0.0, 50.0})
+      if (const auto bend = table_less_slope(main->second.front(), table, t_C))
+        found.push_back(*bend / (product * (t_C - reference_C) * (t_C - reference_C)));
+  }
+  return found;
+}
+
+/// (1/nu) (nu_M ln gamma_M + nu_X ln gamma_X) of a salt of molality m, what its parameters add to the
+/// limiting law. Pitzer 1991, Activity Coefficients in Electrolyte Solutions, 2nd ed., ch. 3.
+double specific_part(const BinaryRow& row, int cation_charge, int anion_charge, double m) {
+  const int common = std::gcd(cation_charge, anion_charge);
+  const double of_cation = std::abs(anion_charge) / common, of_anion = std::abs(cation_charge) / common;
+  const double nu = of_cation + of_anion;
+  const double I =
+      m * (of_cation * cation_charge * cation_charge + of_anion * anion_charge * anion_charge) / 2;
+  const auto falling = [&](double beta, double alpha) {
+    if (beta == 0 || std::isnan(beta)) return 0.0;
+    const double x = alpha * std::sqrt(I);
+    return 2 * beta / (x * x) * (1 - (1 + x - x * x / 2) * std::exp(-x));
+  };
+  const auto& [beta0, beta1, beta2, C_phi] = row.value;
+  const double B = 2 * beta0 + falling(beta1, row.alpha1) + falling(beta2, row.alpha2);
+  return m * 2 * of_cation * of_anion / nu * B +
+         m * m * 2 * std::pow(of_cation * of_anion, 1.5) / nu * 1.5 * C_phi;
+}
+
+/// By how much two published fits of one salt differ at 25 degC, at the end of the range of the first: of ln
+/// gamma, per product of charges. Acids whose anion has a second proton are left out: only the sum of the
+/// parameters of both anions was fitted.
+std::vector<double> fits_apart() {
+  std::vector<double> found;
+  for (const auto& [key, table] : tables().binary) {
+    const auto& [set, cation, anion] = key;
+    const auto main = tables().binary.find({"main", cation, anion});
+    const auto here =
+        std::find_if(table.begin(), table.end(), [](const BinaryRow& r) { return r.t_C == reference_C; });
+    if (set != "warm" || main == tables().binary.end() || here == table.end()) continue;
+    const BinaryRow& row = main->second.front();
+    if (std::isnan(row.max_molality) || (cation == "H^+" && anion.find("SO4") != std::string::npos)) continue;
+    const int zc = charge_in_name(cation), za = charge_in_name(anion);
+    found.push_back(
+        (specific_part(*here, zc, za, row.max_molality) - specific_part(row, zc, za, row.max_molality)) /
+        std::abs(zc * za));
+  }
+  return found;
+}
 
 const Doubts& doubts() {
   static const Doubts found = [] {
@@ -220,7 +305,7 @@ const Doubts& doubts() {
           twice_B({row.slope[0], std::isnan(row.slope[1]) ? 0 : row.slope[1], 0}, row.alpha1, 12) / product);
     }
     return Doubts{2 * spread(values["theta"]), 2 * spread(values["lambda"]), spread(values["psi"]),
-                  spread(std::move(slopes))};
+                  spread(std::move(slopes)),   spread(fits_apart()),         spread(bends())};
   }();
   return found;
 }
@@ -230,6 +315,27 @@ double left_of_spread(std::string_view quality) {
   if (quality == "regressed" || quality == "analogy, tested" || quality == "imposed") return 0.05;
   if (quality == "regressed, transferred" || quality == "analogy, weakly tested") return 0.25;
   return 0.5;
+}
+
+/// A fit that ends below this, mol/kg, ended where the salt alone saturates (gypsum at 0.016), not where its
+/// parameters do.
+constexpr double saturation_limited = 0.1;
+
+/// The molality that 68 % of the published fits of these charges reach, mol/kg of the salt: the end of the
+/// range of a fit for which nobody states one.
+double usual_range(int cation_charge, int anion_charge) {
+  constexpr double fraction = 0.32;
+  std::vector<double> ends;
+  for (const auto& [key, rows] : tables().binary) {
+    const auto& [set, cation, anion] = key;
+    const double end = rows.front().max_molality;
+    if (set == "main" && !std::isnan(end) && charge_in_name(cation) == cation_charge &&
+        charge_in_name(anion) == anion_charge)
+      ends.push_back(end);
+  }
+  if (ends.empty()) return 1;
+  std::sort(ends.begin(), ends.end());
+  return ends[static_cast<std::size_t>(fraction * static_cast<double>(ends.size() - 1) + 0.5)];
 }
 
 class Collector {
@@ -259,6 +365,9 @@ class Collector {
 
  private:
   using Kind = InteractionNote::Kind;
+  struct LikeIons {
+    std::uint32_t i, j;
+  };
 
   const std::string& name(std::uint32_t i) const { return solutes_[i].name; }
   int charge_product(const std::vector<std::uint32_t>& pair) const {
@@ -369,25 +478,40 @@ class Collector {
     found_.binary.push_back({cation, anion, v[0], v[1], v[2], v[3] / (2 * std::sqrt(std::abs(zc * za))),
                              row.alpha1, std::isnan(row.alpha2) ? 0 : row.alpha2});
     note_quality(rows, {cation, anion}, "", u_of_pair(cation, anion));
+    if (is_published(row.quality)) note_accuracy(row, cation, anion);
     if (no_slope)
       note(Kind::no_temperature_data, {cation, anion},
            "no temperature dependence published; the value at 25 degC taken")
           .u_ln_gamma = doubts().slope_per_K * std::abs(zc * za * (t_.v - reference_C));
-    else if (!rows.table)
-      note_extrapolated_slope(cation, anion);
+    else if (away_from_25() && (moved_by_slope(rows, t_) || t_.v < reference_C))
+      note_bend(rows, cation, anion);
     note_range(rows, cation, anion);
   }
 
-  /// Linear slopes were derived for 15 to 50 degC (engine/data/README.md); further out the change is as
-  /// uncertain as one that nobody published.
-  void note_extrapolated_slope(std::uint32_t cation, std::uint32_t anion) {
+  /// What two published fits of one salt differ by, reached at the end of the range.
+  void note_accuracy(const BinaryRow& row, std::uint32_t cation, std::uint32_t anion) {
+    const int zc = solutes_[cation].charge, za = solutes_[anion].charge;
+    const double end = row.max_molality >= saturation_limited ? row.max_molality : usual_range(zc, za);
+    const double most_of_other = end * std::max(zc, -za) / std::gcd(zc, za);
+    note(Kind::accuracy, {cation, anion}, "the accuracy of its published fit").u_ln_gamma =
+        doubts().fit * std::abs(zc * za) / most_of_other;
+  }
+
+  /// A slope leaves out how the change bends; told outside 15 to 50 degC, for which slopes were derived
+  /// (engine/data/README.md). Below 25 degC tables rest on few measurements: where a pair has both, what they
+  /// differ by is the doubt, else what others do.
+  void note_bend(const Served<BinaryRow>& rows, std::uint32_t cation, std::uint32_t anion) {
     constexpr double from_C = 15, to_C = 50;
-    const double beyond_K = std::max({from_C - t_.v, t_.v - to_C, 0.0});
-    if (beyond_K <= 0) return;
-    note(Kind::no_temperature_data, {cation, anion},
-         "its linear temperature dependence is meant for 15 to 50 degC")
+    const bool told = moved_by_slope(rows, t_) && (t_.v < from_C || t_.v > to_C);
+    const double K = t_.v - reference_C;
+    const auto both =
+        rows.at_25 && rows.table ? table_less_slope(rows.at_25->front(), *rows.table, t_.v) : std::nullopt;
+    note(told ? Kind::no_temperature_data : Kind::accuracy, {cation, anion},
+         moved_by_slope(rows, t_) ? "its linear temperature dependence is meant for 15 to 50 degC"
+                                  : "its temperature dependence below 25 degC")
         .u_ln_gamma =
-        doubts().slope_per_K * beyond_K * std::abs(solutes_[cation].charge * solutes_[anion].charge);
+        both ? std::abs(*both)
+             : doubts().bend_per_K2 * K * K * std::abs(solutes_[cation].charge * solutes_[anion].charge);
   }
 
   /// Notes what is not published: the value itself, or its change from 25 degC.
@@ -410,8 +534,11 @@ class Collector {
   void note_range(const Served<BinaryRow>& rows, std::uint32_t cation, std::uint32_t anion) {
     const BinaryRow& row = rows.row();
     // The tables were made for, or tested up to, saturation where they state no limit.
-    double limit = (rows.table && away_from_25() ? rows.table->front() : row).max_molality;
-    if (std::isnan(limit)) return;
+    const bool by_table = away_from_25() && !moved_by_slope(rows, t_);
+    double limit = (by_table ? rows.table->front() : row).max_molality;
+    if (std::isnan(limit) && (by_table || !is_published(row.quality))) return;
+    const bool stated = !std::isnan(limit);
+    if (!stated) limit = usual_range(solutes_[cation].charge, solutes_[anion].charge);
     std::vector<InteractionNote::Counted> counted;
     std::string of = "the salt";
     if (row.range_of == "ligand") {
@@ -430,7 +557,9 @@ class Collector {
     }
     InteractionNote& added =
         note(Kind::above_range, {cation, anion},
-             "parameters were fitted up to " + units::significant(limit, 3) + " mol/kg of " + of);
+             stated ? "parameters were fitted up to " + units::significant(limit, 3) + " mol/kg of " + of
+                    : "no range of its parameters is published; most of its kind end by " +
+                          units::significant(limit, 3) + " mol/kg of " + of);
     added.limit_molal = limit;
     added.counted = std::move(counted);
   }
@@ -448,7 +577,10 @@ class Collector {
   void like(std::uint32_t i, std::uint32_t j) {
     const Served<MixingRow> rows = mixing_rows(interaction("theta", name(i), name(j), {}));
     const double theta = rows ? mixing_value(rows, {i, j}, "theta", doubts().theta) : 0;
-    if (!rows) note(Kind::missing, {i, j}, "theta not published; zero taken").u_ln_gamma = doubts().theta;
+    if (rows)
+      published_thetas_.push_back({i, j});
+    else
+      note(Kind::missing, {i, j}, "theta not published; zero taken").u_ln_gamma = doubts().theta;
     if (theta != 0 || solutes_[i].charge != solutes_[j].charge) found_.like_pairs.push_back({i, j, theta});
   }
 
@@ -475,6 +607,19 @@ class Collector {
       const double value = mixing_value(rows, at, who.first.c_str(), doubts().psi);
       if (value != 0) found_.triplets.push_back({at[0], at[1], at[2], value});
     }
+    for (const LikeIons& pair : published_thetas_)
+      for (std::uint32_t k = 0; k < solutes_.size(); ++k)
+        if (solutes_[k].charge * solutes_[pair.i].charge < 0) note_missing_psi(pair, k);
+  }
+
+  /// Where all pairs of a triplet are known, what is left open is psi.
+  void note_missing_psi(const LikeIons& pair, std::uint32_t counter) {
+    const auto known = [&](std::uint32_t ion) {
+      return solutes_[ion].charge > 0 ? binary_rows(ion, counter) : binary_rows(counter, ion);
+    };
+    if (outside_[counter] || !known(pair.i) || !known(pair.j)) return;
+    if (mixing_rows(interaction("psi", name(pair.i), name(pair.j), name(counter)))) return;
+    note(Kind::missing, {pair.i, pair.j, counter}, "psi not published; zero taken").u_ln_gamma = doubts().psi;
   }
 
   std::span<const Solute> solutes_;
@@ -483,6 +628,7 @@ class Collector {
   std::vector<std::string> order_;
   std::map<std::string, std::uint32_t> position_;
   std::vector<bool> outside_;
+  std::vector<LikeIons> published_thetas_;
   PitzerParameters found_;
 };
 

@@ -42,13 +42,20 @@ struct PitzerParameters {
 ///   cation - anion   of 2 B at 1 mol/kg among the pairs of the same charges; with fewer than five of them
 ///                    |z+ z-| times that of the 1-1 pairs
 ///   theta, lambda    twice the spread of the published values; psi and zeta: their spread, per mol2/kg2
-///   temperature      of the published slopes over |z+ z-|, times |z+ z- (t - 25)|
+///   published fits   of ln gamma at the end of their range, where two exist: what they differ by at 25 degC
+///                    over |z+ z-|; less in proportion to molality below. A fit whose range nobody states is
+///                    taken to end where 68 % of the others of its charges still hold
+///   temperature      no slope: of the published slopes over |z+ z-|, times |z+ z- (t - 25)|
+///                    a slope, or a table below 25 degC: of what the published tables add to the slopes of
+///                    the same pairs at 0 and 50 degC, per K^2, times |z+ z-| (t - 25)^2; of a pair that has
+///                    both, what they differ by
 ///   half of it for an estimate or analogy, a quarter where weakly tested or transferred, a twentieth where
 ///                    regressed or tested on data
 /// The rules:
 ///   cation - anion   median beta0, beta1, beta2 of the published pairs of the same charge type, C_phi = 0
 ///   ion without any published pair, of a charge type with fewer than three published pairs: outside the
-///   model like - like      theta = 0 (the electrostatic E-theta stays) triplets, neutral - anything    0
+///   model like - like      theta = 0 (the electrostatic E-theta stays) triplets, neutral - anything    0; a
+///   psi that is not published is noted where the pairs of its triplet are
 PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, ParameterSets sets);
 
 }  // namespace bathwright::activity

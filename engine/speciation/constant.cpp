@@ -98,6 +98,12 @@ double Constant::log10_at(units::Celsius t) const {
   return log10_K + R_ln_K / gas_constant / ln10;
 }
 
+double Constant::uncertainty_at(units::Celsius t) const {
+  const double T = units::kelvin(t), to_log10 = 1 / gas_constant / ln10;
+  return std::hypot(uncertainty, 1000 * u_dH_kJ_per_mol * (1 / T - 1 / reference_K) * to_log10,
+                    u_dCp_J_per_molK * of_constant(T) * to_log10);
+}
+
 double Constant::heat_capacity_at(units::Celsius t) const {
   const double T = units::kelvin(t);
   const double X =
@@ -111,6 +117,8 @@ void Constant::add(const Constant& other, double times) {
   dH_kJ_per_mol += times * other.dH_kJ_per_mol;
   dCp_J_per_molK += times * other.dCp_J_per_molK;
   uncertainty = std::hypot(uncertainty, times * other.uncertainty);
+  u_dH_kJ_per_mol = std::hypot(u_dH_kJ_per_mol, times * other.u_dH_kJ_per_mol);
+  u_dCp_J_per_molK = std::hypot(u_dCp_J_per_molK, times * other.u_dCp_J_per_molK);
   has_dH = has_dH && other.has_dH;
   curve.add(other.curve, times);
 }

@@ -86,6 +86,8 @@ Coverage coverage(const Solver& solver, const Equilibrium& answer) {
       case Kind::no_temperature_data:
         if (effect >= told) found.warnings.push_back(note.text);
         break;
+      case Kind::accuracy:
+        break;
       case Kind::above_range:
         // Both must be there: a fit says nothing of a solution without one of its ions.
         if (!std::all_of(note.solutes.begin(), note.solutes.end(), matters)) break;

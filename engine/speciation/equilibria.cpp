@@ -34,6 +34,11 @@ void carry_to_zero(Constant& constant, const Reaction& reaction, double I) {
   constant.uncertainty = std::hypot(constant.uncertainty, I <= 0.5 ? 0.1 : I <= 1 ? 0.3 : 0.6);
 }
 
+/// "dH estimated", "dH approximate" in a note.
+bool calls_dH_rough(std::string_view note) {
+  return note.find("dH est") != std::string_view::npos || note.find("dH appr") != std::string_view::npos;
+}
+
 /// A reaction that does not read is left to resolve(), which says so.
 Constant constant_in(const data::CsvRow& row, const std::string& name, const TemperatureData& temperature) {
   const double dH = row.number("dH_kJ_mol"), dCp = row.number("dCp_J_molK");
@@ -41,7 +46,7 @@ Constant constant_in(const data::CsvRow& row, const std::string& name, const Tem
                     row.number("uncertainty"), !std::isnan(dH)};
   if (const auto reaction = parse_reaction(row["reaction"], row.where()))
     temperature.complete(constant, name, row["set"].empty() ? "main" : std::string(row["set"]),
-                         !std::isnan(dCp), *reaction);
+                         !std::isnan(dCp), calls_dH_rough(row["note"]), *reaction);
   return constant;
 }
 

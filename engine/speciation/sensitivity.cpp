@@ -312,12 +312,12 @@ Change by_interaction(const activity::InteractionNote& note, const Equilibrium& 
 
 }  // namespace
 
-Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Equilibrium& answer,
-                                const InputUncertainty& input) {
+Result<std::vector<Shift>> independent_shifts(const Solver& solver, const Task& task,
+                                              const Equilibrium& answer, const InputUncertainty& input) {
   const auto sensitivity = Sensitivity::at(solver, task, answer);
   if (!sensitivity) return sensitivity.problems();
   const ChemicalSystem& system = solver.system();
-  Variance variance(system);
+  std::vector<Shift> shifts;
   const auto by_each = [&](std::vector<double> Change::*field, std::size_t count, auto standard_uncertainty) {
     Change change;
     (change.*field).assign(count, 0);
@@ -325,12 +325,14 @@ Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Eq
       const double u = standard_uncertainty(i);
       if (u == 0) continue;
       (change.*field)[i] = u;
-      variance.add(sensitivity->respond(change));
+      shifts.push_back(sensitivity->respond(change));
       (change.*field)[i] = 0;
     }
   };
-  const auto of_constant = [](const auto& rows) {
-    return [&rows](std::size_t i) { return rows[i].constant.uncertainty * std::numbers::ln10; };
+  const auto of_constant = [&](const auto& rows) {
+    return [&](std::size_t i) {
+      return rows[i].constant.uncertainty_at(solver.temperature()) * std::numbers::ln10;
+    };
   };
   by_each(&Change::ln_K_species, system.species().size(),
           [&](std::size_t j) { return answer.molality[j] > 0 ? of_constant(system.species())(j) : 0.0; });
@@ -344,12 +346,12 @@ Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Eq
     if (note.u_ln_gamma == 0) continue;
     const Change change = by_interaction(note, answer);
     if (*std::max_element(change.ln_gamma.begin(), change.ln_gamma.end()) > seen)
-      variance.add(sensitivity->respond(change));
+      shifts.push_back(sensitivity->respond(change));
   }
   if (input.water_kg != 0) {
     Change change;
     change.water_kg = input.water_kg;
-    variance.add(sensitivity->respond(change));
+    shifts.push_back(sensitivity->respond(change));
   }
   if (input.temperature_K != 0) {
     auto change = Sensitivity::per_kelvin(solver, answer);
@@ -358,8 +360,17 @@ Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Eq
     for (auto* values : {&shift.ln_molality, &shift.ln_activity, &shift.saturation_index, &shift.ln_gas_bar})
       for (double& v : *values) v *= input.temperature_K;
     shift.ln_water_activity *= input.temperature_K;
-    variance.add(shift);
+    shifts.push_back(std::move(shift));
   }
+  return shifts;
+}
+
+Result<Uncertainty> uncertainty(const Solver& solver, const Task& task, const Equilibrium& answer,
+                                const InputUncertainty& input) {
+  const auto shifts = independent_shifts(solver, task, answer, input);
+  if (!shifts) return shifts.problems();
+  Variance variance(solver.system());
+  for (const Shift& shift : *shifts) variance.add(shift);
   return variance.root();
 }
 

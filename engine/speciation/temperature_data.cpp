@@ -32,16 +32,39 @@ TemperatureData::TemperatureData(activity::Convention convention) {
   }
 }
 
+namespace {
+
+double u_dCp(const Reaction& reaction) {
+  double squares = 0;
+  for (const auto* side : {&reaction.left, &reaction.right})
+    for (const Term& term : *side)
+      if (term.name != "H2O" && term.name != "H^+" && !term.name.ends_with("(s)"))
+        squares += std::pow(term.coefficient * doubt::dCp_of_one, 2);
+  return std::sqrt(squares);
+}
+
+}  // namespace
+
 void TemperatureData::complete(Constant& constant, const std::string& row, const std::string& set,
-                               bool states_dCp, const Reaction& reaction) const {
-  if (const auto function = functions_.find({row, set}); function != functions_.end()) {
+                               bool states_dCp, bool rough_dH, const Reaction& reaction) const {
+  const auto function = functions_.find({row, set});
+  if (function != functions_.end()) {
     constant.dH_kJ_per_mol = function->second.dH_kJ_per_mol;
     constant.dCp_J_per_molK = function->second.dCp_J_per_molK;
     constant.curve = function->second.curve;
     constant.has_dH = true;
-    return;
+    rough_dH = false;
   }
-  if (states_dCp || !constant.has_dH) return;
+  const bool knows_dCp = function != functions_.end() || states_dCp ||
+                         (constant.has_dH && add_heat_capacities(constant, reaction));
+  constant.u_dH_kJ_per_mol = !constant.has_dH ? doubt::dH_unknown
+                             : rough_dH       ? doubt::dH_rough
+                             : knows_dCp      ? doubt::dH_with_dCp
+                                              : doubt::dH_alone;
+  constant.u_dCp_J_per_molK = knows_dCp ? u_dCp(reaction) : doubt::dCp_unknown;
+}
+
+bool TemperatureData::add_heat_capacities(Constant& constant, const Reaction& reaction) const {
   HeatCapacity sum;
   const auto add = [&](const Term& term, double sign) {
     const auto known = heat_capacity_.find(term.name);
@@ -51,11 +74,12 @@ void TemperatureData::complete(Constant& constant, const std::string& row, const
     return true;
   };
   for (const Term& term : reaction.left)
-    if (!add(term, -1)) return;
+    if (!add(term, -1)) return false;
   for (const Term& term : reaction.right)
-    if (!add(term, 1)) return;
+    if (!add(term, 1)) return false;
   constant.dCp_J_per_molK = sum.constant;
   constant.curve = sum.curve;
+  return true;
 }
 
 }  // namespace bathwright::speciation

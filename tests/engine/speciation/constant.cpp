@@ -2,6 +2,7 @@
 #include <bathwright/speciation/constant.hpp>
 #include <bathwright/speciation/equilibria.hpp>
 #include <catch2/catch.hpp>
+#include <cmath>
 #include <vector>
 
 using namespace bathwright;
@@ -48,6 +49,30 @@ TEST_CASE("log K moves with temperature as the integrated van 't Hoff law says",
   // dCp = -100 J/(mol K) alone: (-100/8.314462618)(ln(323.15/298.15) - 1 + 298.15/323.15)/ln 10 = -0.016488
   const Constant curved{0, 0, -100, 0, true};
   CHECK(curved.log10_at({50}) == Approx(-0.016488).margin(1e-6).epsilon(0));
+}
+
+TEST_CASE("a constant is the less certain the further from 25 degC", "[unit]") {
+  // u(dH) = 1 kJ/mol to 50 degC: a tenth of the 0.135535 above; u(dCp) = 100 J/(mol K): its 0.016488.
+  Constant constant{1.0, 10, 0, 0.02, true};
+  CHECK(constant.uncertainty_at({50}) == Approx(0.02).margin(1e-12).epsilon(0));
+  constant.u_dH_kJ_per_mol = 1;
+  constant.u_dCp_J_per_molK = 100;
+  CHECK(constant.uncertainty_at({25}) == Approx(0.02).margin(1e-12).epsilon(0));
+  CHECK(constant.uncertainty_at({50}) ==
+        Approx(std::hypot(0.02, 0.0135535, 0.016488)).margin(2e-6).epsilon(0));
+}
+
+TEST_CASE("what is known of dH and dCp decides the doubt", "[unit]") {
+  // A published function; heat capacities of all that takes part; an estimated dH alone.
+  const Constant& water = interaction().species().at("OH^-").formation;
+  const Constant& salt = solid("KCl").dissolution;
+  const Constant* hydroxide = interaction().stated("Ni(OH)2 (freshly precipitated)");
+  REQUIRE(hydroxide);
+  CHECK(water.u_dH_kJ_per_mol == 0.5);
+  CHECK(salt.u_dH_kJ_per_mol == 0.5);
+  CHECK(salt.u_dCp_J_per_molK == Approx(20 * std::sqrt(2.0)));
+  CHECK(hydroxide->u_dH_kJ_per_mol == 5);
+  CHECK(hydroxide->u_dCp_J_per_molK == 231);
 }
 
 TEST_CASE("every part of dCp is the second derivative of log K", "[property]") {

@@ -1,5 +1,6 @@
 // When an answer says that it may not be believed.
 #include <bathwright/speciation/coverage.hpp>
+#include <cmath>
 
 #include "systems.hpp"
 
@@ -37,7 +38,47 @@ TEST_CASE("a solution whose interactions are published is valid and silent", "[u
   const Judged salt = judged({{"Na^+", 2}, {"Cl^-", 2}});
   CHECK(salt.coverage.valid);
   CHECK(salt.coverage.warnings.empty());
-  CHECK(salt.coverage.u_ln_gamma == 0);
+  // What is left is the accuracy of the fit itself: a fiftieth at its end, 6 mol/kg.
+  CHECK(salt.coverage.u_ln_gamma > 0);
+  CHECK(salt.coverage.u_ln_gamma < 0.01);
+}
+
+TEST_CASE("a published fit is the less certain the nearer its end", "[property]") {
+  const auto u = [](double m) { return judged({{"Na^+", m}, {"Cl^-", m}}).coverage.u_ln_gamma; };
+  CHECK(u(4) == Approx(2 * u(2)).epsilon(1e-6));
+}
+
+TEST_CASE("a fit without a published range is not believed at any strength", "[unit]") {
+  CHECK(judged({{"Na^+", 2}, {"CO3^2-", 1}}).coverage.valid);
+  const Judged strong = judged({{"Na^+", 9}, {"CO3^2-", 4.5}});
+  CHECK_FALSE(strong.coverage.valid);
+  CHECK(tells(strong.coverage, "no range of its parameters is published"));
+}
+
+TEST_CASE("the colder, the less certain is a linear slope", "[property]") {
+  // Sodium nitrate: slopes alone. Beyond what 25 degC leaves open the doubt goes with the square.
+  const auto u = [](double t_C) {
+    return judged({{"Na^+", 1}, {"NO3^-", 1}}, ModelKind::pitzer, {t_C}).coverage.u_ln_gamma;
+  };
+  const double at_25 = u(25), shift_5 = std::pow(u(5), 2) - at_25 * at_25,
+               shift_15 = std::pow(u(15), 2) - at_25 * at_25;
+  CHECK(shift_15 > 0);
+  CHECK(shift_5 == Approx(16 * shift_15).epsilon(1e-3));
+}
+
+TEST_CASE("a psi nobody published is named where the pairs are known", "[unit]") {
+  // K^+ - Ni^2+: an analogous theta; Cl^- - NO3^-: published theta, psi of nickel not.
+  const Judged mixed = judged({{"Ni^2+", 1}, {"Cl^-", 1.5}, {"NO3^-", 0.5}});
+  bool named = false;
+  for (const std::string& text : mixed.coverage.missing)
+    named = named || text.find("psi not published") != std::string::npos;
+  CHECK(named);
+}
+
+TEST_CASE("Davies states the specific interaction it leaves out", "[unit]") {
+  const Judged salt = judged({{"Na^+", 0.1}, {"Cl^-", 0.1}}, ModelKind::davies);
+  CHECK(salt.coverage.valid);
+  CHECK(salt.coverage.u_ln_gamma == Approx(0.025).epsilon(0.01));
 }
 
 TEST_CASE("a trace that holds nearly all of a component decides", "[unit]") {

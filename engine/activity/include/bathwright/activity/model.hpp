@@ -35,7 +35,14 @@ inline constexpr double water_kg_per_mol = 0.0180153;
 
 /// Something about an interaction that a user must be able to see: it was missing, guessed, out of its range.
 struct InteractionNote {
-  enum class Kind : std::uint8_t { missing, estimated, no_temperature_data, above_range, outside_model };
+  enum class Kind : std::uint8_t {
+    missing,
+    estimated,
+    no_temperature_data,
+    above_range,
+    outside_model,
+    accuracy  ///< of the published itself: counts in every uncertainty, told only as part of the whole
+  };
   Kind kind = Kind::missing;
   std::vector<std::uint32_t>
       solutes;             ///< whose molalities decide whether it matters: positions in the solute list

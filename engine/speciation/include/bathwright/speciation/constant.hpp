@@ -46,11 +46,14 @@ struct Constant {
   double log10_K = 0;        ///< 25 degC, molal, zero ionic strength
   double dH_kJ_per_mol = 0;  ///< 0 and has_dH = false: unknown, no temperature correction
   double dCp_J_per_molK = 0;
-  double uncertainty = 0;  ///< one standard uncertainty of log10 K
+  double uncertainty = 0;  ///< one standard uncertainty of log10 K at 25 degC
   bool has_dH = true;
   HeatCapacityCurve curve{};
+  double u_dH_kJ_per_mol = 0, u_dCp_J_per_molK = 0;  ///< standard uncertainties at 25 degC
 
   [[nodiscard]] double log10_at(units::Celsius t) const;
+  /// Standard uncertainty of log10 K there: of 25 degC, of dH and of dCp, taken as independent.
+  [[nodiscard]] double uncertainty_at(units::Celsius t) const;
   /// The heat capacity of reaction, J/(mol K).
   [[nodiscard]] double heat_capacity_at(units::Celsius t) const;
   /// The constant of `times` times the reaction added to this one.

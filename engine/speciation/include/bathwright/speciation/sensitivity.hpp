@@ -60,11 +60,17 @@ struct InputUncertainty {
   double temperature_K = 0;
 };
 
-/// Standard uncertainties of an answer, one sigma, first order, sources independent of each other: the
-/// constants (Constant::uncertainty), the activity coefficients (InteractionNote::u_ln_gamma) and the inputs.
+/// What one standard uncertainty of each source does to an answer, first order: of the constants
+/// (Constant::uncertainty_at), the activity coefficients (InteractionNote::u_ln_gamma) and the inputs.
+/// Sources are independent of each other: u of a quantity is the root of the sum of squares of its shifts.
+/// Fails as Sensitivity::at.
+Result<std::vector<Shift>> independent_shifts(const Solver& solver, const Task& task,
+                                              const Equilibrium& answer, const InputUncertainty& input = {});
+
+/// Standard uncertainties of an answer, one sigma, from independent_shifts.
 struct Uncertainty {
   double pH = 0, ln_water_activity = 0;
-  std::vector<double> ln_molality, ln_activity;  ///< per species
+  std::vector<double> ln_molality, ln_activity;     ///< per species
   std::vector<double> solid_mol, saturation_index;  ///< per solid; saturation_index log10
   std::vector<double> ln_gas_bar;                   ///< per gas
 };
