@@ -102,4 +102,14 @@ std::string doubt(const speciation::Solver& solver, const speciation::Equilibriu
   return text;
 }
 
+std::optional<double> standard_uncertainty(const speciation::Solver& solver, const speciation::Task& task,
+                                           const speciation::Equilibrium& answer,
+                                           const std::function<double(const speciation::Shift&)>& of) {
+  const auto shifts = speciation::independent_shifts(solver, task, answer);
+  if (!shifts) return std::nullopt;
+  double sum = 0;
+  for (const speciation::Shift& shift : *shifts) sum += of(shift) * of(shift);
+  return std::sqrt(sum);
+}
+
 }  // namespace bathwright::reference

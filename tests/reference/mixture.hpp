@@ -3,8 +3,10 @@
 
 #include <bathwright/matter/formula.hpp>
 #include <bathwright/speciation/components.hpp>
-#include <bathwright/speciation/solver.hpp>
+#include <bathwright/speciation/sensitivity.hpp>
+#include <functional>
 #include <map>
+#include <optional>
 
 namespace bathwright::reference {
 
@@ -39,5 +41,11 @@ double molar_mass(const std::string& formula);
 /// Why the model should not be judged at this composition, or empty: what a user would be told, where the
 /// engine calls its own answer no more than indicative (speciation/coverage.hpp).
 std::string doubt(const speciation::Solver& solver, const speciation::Equilibrium& answer);
+
+/// Standard uncertainty of a quantity of an answer; of: what it changes by, first order, when the answer
+/// shifts. Nothing where the equilibrium has no derivatives.
+std::optional<double> standard_uncertainty(const speciation::Solver& solver, const speciation::Task& task,
+                                           const speciation::Equilibrium& answer,
+                                           const std::function<double(const speciation::Shift&)>& of);
 
 }  // namespace bathwright::reference

@@ -12,6 +12,21 @@
 
 namespace bathwright::reference {
 
+namespace {
+
+/// A column of fitted.csv or doubtful.csv by the id of the row.
+std::map<std::string, std::string> by_row(const std::string& table, std::string_view column) {
+  std::ifstream file(REFERENCE_DIR "/" + table);
+  std::stringstream content;
+  content << file.rdbuf();
+  std::map<std::string, std::string> found;
+  if (const auto rows = data::CsvTable::read(table, content.str()))
+    for (std::size_t i = 0; i < rows->size(); ++i) found.emplace((*rows)[i]["id"], (*rows)[i][column]);
+  return found;
+}
+
+}  // namespace
+
 std::vector<Figure> read_figures(std::string_view table) {
   const std::string name(table);
   std::ifstream file(REFERENCE_DIR "/" + name + ".csv");
@@ -19,6 +34,7 @@ std::vector<Figure> read_figures(std::string_view table) {
   content << file.rdbuf();
   constexpr std::string_view numeric[] = {"T_C", "value", "tolerance"};
   const auto rows = data::CsvTable::read(name + ".csv", content.str(), numeric);
+  const auto doubtful = by_row("doubtful.csv", "reason");
   std::vector<Figure> figures;
   if (!rows) return figures;
   for (std::size_t i = 0; i < rows->size(); ++i) {
@@ -26,7 +42,7 @@ std::vector<Figure> read_figures(std::string_view table) {
     figures.push_back({name, std::string(row["id"]), std::string(row["system"]),
                        std::string(row["conditions"]), std::string(row["quantity"]), std::string(row["unit"]),
                        row.number("T_C"), row.number("value"), row.number("tolerance"),
-                       row["from_memory"] == "yes"});
+                       row["from_memory"] == "yes", doubtful.contains(std::string(row["id"]))});
   }
   return figures;
 }
@@ -37,6 +53,11 @@ double Line::error_in_tolerances() const {
   return std::abs(*computed.value - figure.published) / figure.tolerance;
 }
 
+bool Line::silent() const {
+  if (!covered() || error_in_tolerances() <= silent_from) return false;
+  return std::abs(*computed.value - figure.published) > silent_from * computed.u.value_or(0);
+}
+
 namespace {
 
 bool dilute(const Figure& figure) {
@@ -45,21 +66,6 @@ bool dilute(const Figure& figure) {
   if (recipe.empty() || !mixture) return false;
   const auto answer = mixture->solver->solve(mixture->task);
   return answer && answer->ionic_strength <= dilute_molal;
-}
-
-}  // namespace
-
-namespace {
-
-/// The constants that were regressed from a row, by the id of the row.
-std::map<std::string, std::string> fitted_rows() {
-  std::ifstream file(REFERENCE_DIR "/fitted.csv");
-  std::stringstream content;
-  content << file.rdbuf();
-  std::map<std::string, std::string> fitted;
-  if (const auto rows = data::CsvTable::read("fitted.csv", content.str()))
-    for (std::size_t i = 0; i < rows->size(); ++i) fitted.emplace((*rows)[i]["id"], (*rows)[i]["constant"]);
-  return fitted;
 }
 
 }  // namespace
@@ -89,7 +95,7 @@ std::vector<Line> compare_all() {
       if (table.with_davies && dilute(figure))
         lines.push_back({figure, ModelKind::davies, table.compute(figure, ModelKind::davies)});
     }
-  const auto fitted = fitted_rows();
+  const auto fitted = by_row("fitted.csv", "constant");
   for (Line& line : lines)
     if (const auto constant = fitted.find(line.figure.id); constant != fitted.end())
       line.computed.not_covered = "fitted: log10 K of " + constant->second + " was regressed from this row";
@@ -104,8 +110,15 @@ std::string number(double value) {
   return text;
 }
 
+std::string two_digits(double value) {
+  char text[32];
+  std::snprintf(text, sizeof text, "%.2g", value);
+  return text;
+}
+
 std::string verdict(const Line& line) {
   if (!line.covered()) return "not covered: " + line.computed.not_covered;
+  if (line.silent()) return line.figure.advisory() ? "outside, silent, advisory" : "outside, silent";
   return line.inside() ? "inside" : "outside";
 }
 
@@ -115,16 +128,17 @@ void write_row(std::ostringstream& out, const Line& line) {
       << " | " << number(f.published) << " | ";
   if (line.computed.value)
     out << number(*line.computed.value) << " | "
-        << number(100 * (*line.computed.value - f.published) / std::abs(f.published));
+        << number(100 * (*line.computed.value - f.published) / std::abs(f.published)) << " | ";
   else
-    out << " | ";
+    out << " | | ";
+  if (line.computed.value && line.computed.u) out << two_digits(*line.computed.u);
   out << " | " << number(f.tolerance) << " | " << verdict(line) << " | " << activity::name(line.model)
       << " | " << line.computed.note << " |\n";
 }
 
 constexpr std::string_view head =
-    "| id | system | conditions | degC | quantity | published | computed | error % | tolerance | verdict | model "
-    "| note |\n|---|---|---|---|---|---|---|---|---|---|---|---|\n";
+    "| id | system | conditions | degC | quantity | published | computed | error % | u | tolerance | verdict | model "
+    "| note |\n|---|---|---|---|---|---|---|---|---|---|---|---|---|\n";
 
 }  // namespace
 
@@ -151,11 +165,14 @@ std::string markdown(const std::vector<Line>& lines) {
   std::stable_sort(outside.begin(), outside.end(), [](const Line* a, const Line* b) {
     return a->error_in_tolerances() > b->error_in_tolerances();
   });
-  const auto silent = std::count_if(outside.begin(), outside.end(), [](const Line* line) {
-    return line->error_in_tolerances() > silent_from;
-  });
-  out << "\nSilent wrong answers, more than " << silent_from
-      << " tolerances outside and yet called valid: " << silent << ".\n";
+  const auto count = [&](auto which) { return std::count_if(outside.begin(), outside.end(), which); };
+  const auto far = count([](const Line* line) { return line->error_in_tolerances() > silent_from; });
+  const auto silent = count([](const Line* line) { return line->silent(); });
+  const auto advisory = count([](const Line* line) { return line->silent() && line->figure.advisory(); });
+  out << "\n`u` is the standard uncertainty that the engine states of the value. Called valid and more than "
+      << silent_from << " tolerances outside: " << far << ". Silent wrong answers, of these more than "
+      << silent_from << " u outside as well: " << silent - advisory << "; and " << advisory
+      << " against rows that are advisory, recalled or doubtful themselves (`doubtful.csv`).\n";
   out << "\n## Outside the tolerance, worst first\n\n" << head;
   for (const Line* line : outside) write_row(out, *line);
   out << "\n## All rows\n\n" << head;

@@ -26,16 +26,27 @@ Computed of_solution(const Figure& figure, const Recipe& recipe, const std::stri
       sum = std::stod(nu[1]) * recipe.begin()->second;
     else
       for (const auto& [ion, molality] : totals) sum += molality;
-    return {-answer->ln_water_activity / (activity::water_kg_per_mol * sum), std::move(why), {}};
+    const double per_ln = 1 / (activity::water_kg_per_mol * sum);
+    const auto u = standard_uncertainty(*mixture->solver, mixture->task, *answer,
+                                        [&](const auto& shift) { return shift.ln_water_activity * per_ln; });
+    return {-answer->ln_water_activity * per_ln, std::move(why), {}, u};
   }
   double sum = 0, nu = 0;
+  std::vector<std::pair<std::size_t, double>> ions;
   for (const auto& [ion, count] : nominal_totals({{salt, 1}}, model)) {
     const auto j = mixture->solver->system().species_index(ion);
     if (!j) return {{}, "the formula has no reading as ions", {}};
     sum += count * (answer->ln_activity[*j] - std::log(totals.at(ion)));
     nu += count;
+    ions.emplace_back(*j, count);
   }
-  return {std::exp(sum / nu), std::move(why), {}};
+  const double mean = std::exp(sum / nu);
+  const auto u = standard_uncertainty(*mixture->solver, mixture->task, *answer, [&](const auto& shift) {
+    double moved = 0;
+    for (const auto& [j, count] : ions) moved += count * shift.ln_activity[j];
+    return mean * moved / nu;
+  });
+  return {mean, std::move(why), {}, u};
 }
 
 }  // namespace
@@ -51,6 +62,9 @@ Computed compute_activity(const Figure& figure, activity::ModelKind model) {
   if (found.value && std::regex_search(figure.conditions, other, relative)) {
     const Computed base = of_solution(figure, {{salt, std::stod(other[1])}}, salt, model);
     if (!base.value) return base;
+    // The uncertainty of both is that of one set of constants; what of it is in common is not taken out.
+    if (found.u)
+      found.u = std::hypot(*found.u, base.u.value_or(0) * *found.value / *base.value) / *base.value;
     *found.value /= *base.value;
   }
   return found;

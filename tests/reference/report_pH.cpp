@@ -44,12 +44,20 @@ Computed compute_pH(const Figure& figure, activity::ModelKind model) {
   const auto answer = mixture->solver->solve(task);
   if (!answer) return {{}, text(answer.problems()), {}};
   std::string why = doubt(*mixture->solver, *answer);
-  if (figure.quantity != "pH")
-    return {answer->molality[*system.species_index("SO4^2-")] / acid, std::move(why), {}};
-  if (answer->ionic_strength > dilute_molal) return {answer->pH(), std::move(why), "unscaled"};
+  if (figure.quantity != "pH") {
+    const std::size_t sulfate = *system.species_index("SO4^2-");
+    const double degree = answer->molality[sulfate] / acid;
+    const auto u = standard_uncertainty(*mixture->solver, task, *answer, [&](const auto& shift) {
+      return degree * (shift.ln_molality[sulfate] + shift.ln_water_kg);
+    });
+    return {degree, std::move(why), {}, u};
+  }
+  const auto u =
+      standard_uncertainty(*mixture->solver, task, *answer, [](const auto& shift) { return shift.pH(); });
+  if (answer->ionic_strength > dilute_molal) return {answer->pH(), std::move(why), "unscaled", u};
   char note[32];
   std::snprintf(note, sizeof note, "unscaled pH %.3f", answer->pH());
-  return {conventional_pH(*mixture, *answer), std::move(why), note};
+  return {conventional_pH(*mixture, *answer), std::move(why), note, u};
 }
 
 }  // namespace bathwright::reference

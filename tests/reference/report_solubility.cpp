@@ -2,6 +2,7 @@
 // constants.
 #include <map>
 #include <regex>
+#include <tuple>
 
 #include "report.hpp"
 #include "saturate.hpp"
@@ -9,20 +10,26 @@
 namespace bathwright::reference {
 namespace {
 
-/// log10 Ksp of the least soluble form that does form in a day, hydroxides and oxides written with OH^-.
+/// The formula without its crystal water: "CaSO4.2H2O" -> CaSO4.
+std::string without_crystal_water(const std::string& formula) { return formula.substr(0, formula.find('.')); }
+
+/// log10 Ksp of the least soluble form that does form in a day, hydroxides and oxides written with OH^-. A
+/// handbook that names no crystal water means the precipitate, whatever it holds; an anhydrous form that is
+/// slow does not stand for it.
 Computed solubility_product(const Figure& figure, activity::ModelKind model) {
   const auto& equilibria = speciation::Equilibria::built_in(activity::convention(model));
   const double log10_Kw = equilibria.species().at("OH^-").formation.log10_at({figure.t_C});
-  std::optional<std::pair<bool, double>> best;  // slow forms only where there is no other
+  std::optional<std::tuple<bool, double, double>> best;  // slow forms only where there is no other
   for (const speciation::SolidData& solid : equilibria.solids()) {
-    if (solid.formula != figure.system) continue;
+    if (solid.formula != figure.system && without_crystal_water(solid.formula) != figure.system) continue;
     const auto protons = solid.gives.find("H^+");
     const double hydroxides = protons == solid.gives.end() ? 0 : -protons->second;
-    const std::pair candidate{solid.slow, solid.dissolution.log10_at({figure.t_C}) + hydroxides * log10_Kw};
+    const std::tuple candidate{solid.slow, solid.dissolution.log10_at({figure.t_C}) + hydroxides * log10_Kw,
+                               solid.dissolution.uncertainty_at({figure.t_C})};
     if (!best || candidate < *best) best = candidate;
   }
   if (!best) return {{}, "no such solid in the tables", {}};
-  return {best->second, {}, {}};
+  return {std::get<1>(*best), {}, {}, std::get<2>(*best)};
 }
 
 /// "CuSO4.5H2O in H2SO4" -> CuSO4: the salt without its crystal water; minerals by their formula.
@@ -30,7 +37,7 @@ std::string salt_of(const std::string& system) {
   static const std::map<std::string, std::string> minerals{{"gypsum", "CaSO4"}, {"gibbsite", "Al(OH)3"}};
   const std::string name = system.substr(0, system.find(" in "));
   const auto mineral = minerals.find(name);
-  return mineral == minerals.end() ? name.substr(0, name.find('.')) : mineral->second;
+  return mineral == minerals.end() ? without_crystal_water(name) : mineral->second;
 }
 
 /// Nothing where the conditions are not read.
@@ -91,7 +98,10 @@ Computed compute_solubility(const Figure& figure, activity::ModelKind model) {
   if (!found) return {{}, text(found.problems()), {}};
   const auto value = in_unit(figure, salts.front(), *found);
   if (!value) return {{}, "unit not read", {}};
-  return {value, found->doubt, {}};
+  Saturated more = *found;
+  more.contents[salts.front()] += found->u_contents;
+  more.volume_L = volume_L(more.contents, figure.t_C, model);
+  return {value, found->doubt, {}, std::abs(*in_unit(figure, salts.front(), more) - *value)};
 }
 
 }  // namespace bathwright::reference

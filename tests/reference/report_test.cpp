@@ -1,6 +1,7 @@
 // The tables as a whole: rows that must agree, and a count that must not fall.
 #include <algorithm>
 #include <catch2/catch.hpp>
+#include <cmath>
 #include <map>
 #include <set>
 
@@ -70,18 +71,64 @@ TEST_CASE("no fewer rows lie inside their tolerance than when this was written",
   std::map<std::pair<std::string, activity::ModelKind>, int> inside;
   for (const Line& line : lines()) inside[{line.figure.table, line.model}] += line.inside();
   using activity::ModelKind;
-  CHECK(inside[{"mean_activity", ModelKind::pitzer}] >= 181);
+  // Lowered when what a published fit, a slope and a psi of zero leave open was first counted: strong
+  // sulfuric acid and solutions near 0 degC that were right are now called indicative, as are the wrong ones
+  // beside them (mean_activity 181, osmotic 77, isopiestic 21, supplement_solubility 3). ph was 86 before the
+  // polyborate parameters moved the medians that stand in for citrate (-0.014 became -0.016), with Davies 73
+  // before they had measured enthalpies (borax at 0 degC).
+  CHECK(inside[{"mean_activity", ModelKind::pitzer}] >= 180);
   CHECK(inside[{"mean_activity", ModelKind::davies}] >= 9);
-  CHECK(inside[{"osmotic", ModelKind::pitzer}] >= 77);
+  CHECK(inside[{"osmotic", ModelKind::pitzer}] >= 76);
   CHECK(inside[{"mixed", ModelKind::pitzer}] >= 52);
-  CHECK(inside[{"isopiestic", ModelKind::pitzer}] >= 21);
+  CHECK(inside[{"isopiestic", ModelKind::pitzer}] >= 16);
   CHECK(inside[{"vapour", ModelKind::pitzer}] >= 12);
-  CHECK(inside[{"ph", ModelKind::pitzer}] >= 86);
-  CHECK(inside[{"ph", ModelKind::davies}] >= 73);
-  // 107 until linear slopes outside 15 to 50 degC were called a doubt: one right answer fewer, five wrong
-  // ones.
-  CHECK(inside[{"solubility", ModelKind::pitzer}] >= 106);
-  CHECK(inside[{"supplement_solubility", ModelKind::pitzer}] >= 3);
+  CHECK(inside[{"ph", ModelKind::pitzer}] >= 83);
+  CHECK(inside[{"ph", ModelKind::davies}] >= 72);
+  CHECK(inside[{"solubility", ModelKind::pitzer}] >= 107);
+  CHECK(inside[{"supplement_solubility", ModelKind::pitzer}] >= 2);
+}
+
+TEST_CASE("no answer is wrong in silence", "[reference]") {
+  // Valid, and outside by more than three tolerances and three of the uncertainties the engine states.
+  int advisory = 0;
+  for (const Line& line : lines()) {
+    if (!line.silent()) continue;
+    INFO(text(line) << ", u " << line.computed.u.value_or(0));
+    CHECK(line.figure.advisory());
+    ++advisory;
+  }
+  CHECK(advisory <= 15);  // a ratchet
+}
+
+TEST_CASE("every value that is judged states its uncertainty", "[reference]") {
+  for (const Line& line : lines()) {
+    if (!line.covered()) continue;
+    INFO(text(line));
+    REQUIRE(line.computed.u);
+    CHECK(std::isfinite(*line.computed.u));
+    CHECK(*line.computed.u > 0);
+  }
+}
+
+TEST_CASE("silent is what neither the tolerance nor the stated uncertainty explains", "[unit]") {
+  const auto line = [](double computed, std::optional<double> u, std::string not_covered = {}) {
+    Figure figure;
+    figure.published = 1;
+    figure.tolerance = 0.01;
+    return Line{figure, activity::ModelKind::pitzer, {computed, std::move(not_covered), {}, u}};
+  };
+  CHECK(line(1.05, 0.01).silent());
+  CHECK(line(1.05, std::nullopt).silent());
+  CHECK_FALSE(line(1.05, 0.02).silent());
+  CHECK_FALSE(line(1.025, 0.001).silent());
+  CHECK_FALSE(line(1.05, 0.01, "a doubt").silent());
+}
+
+TEST_CASE("a doubtful row is a row of the tables and says why", "[unit]") {
+  std::set<std::string> doubtful;
+  for (const Line& line : lines())
+    if (line.figure.doubtful) doubtful.insert(line.figure.id);
+  CHECK(doubtful == std::set<std::string>{"MX-0009", "SP-0008", "VP-0046"});
 }
 
 TEST_CASE("the conventional pH is the unscaled one where chloride follows the convention", "[unit]") {

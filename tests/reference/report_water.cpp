@@ -11,6 +11,7 @@ namespace {
 struct Water {
   double ln_activity;
   std::string doubt;
+  double u_ln_activity;
 };
 
 Result<Water> water_over(const Recipe& recipe, double t_C, activity::ModelKind model) {
@@ -18,7 +19,9 @@ Result<Water> water_over(const Recipe& recipe, double t_C, activity::ModelKind m
   if (!mixture) return mixture.problems();
   const auto answer = mixture->solver->solve(mixture->task);
   if (!answer) return answer.problems();
-  return Water{answer->ln_water_activity, doubt(*mixture->solver, *answer)};
+  const auto u = standard_uncertainty(*mixture->solver, mixture->task, *answer,
+                                      [](const auto& shift) { return shift.ln_water_activity; });
+  return Water{answer->ln_water_activity, doubt(*mixture->solver, *answer), u.value_or(0)};
 }
 
 /// Vapour pressure of pure water in the same table, kPa.
@@ -53,14 +56,21 @@ Computed compute_isopiestic(const Figure& figure, activity::ModelKind model) {
     if (found) (found->ln_activity > known->ln_activity ? low : high) = middle;
   }
   if (!found) return {{}, text(found.problems()), {}};
-  return {high, known->doubt.empty() ? found->doubt : known->doubt, {}};
+  constexpr double step = 1e-3;  // of the molality
+  const auto beyond = water_over({{salt[1], high * (1 + step)}}, figure.t_C, model);
+  if (!beyond) return {{}, text(beyond.problems()), {}};
+  const double slope = (beyond->ln_activity - found->ln_activity) / (high * step);
+  return {high,
+          known->doubt.empty() ? found->doubt : known->doubt,
+          {},
+          std::hypot(known->u_ln_activity, found->u_ln_activity) / std::abs(slope)};
 }
 
 Computed compute_vapour(const Figure& figure, activity::ModelKind model) {
   if (figure.conditions.starts_with("saturated solution")) {
     const auto found = saturate({figure.system}, {}, figure.t_C, model);
     if (!found) return {{}, text(found.problems()), {}};
-    return {found->water_activity, found->doubt, {}};
+    return {found->water_activity, found->doubt, {}, found->u_water_activity};
   }
   const auto pure = pure_water_kPa(figure.t_C);
   const Recipe recipe = read_recipe(figure.conditions, figure.system);
@@ -68,8 +78,8 @@ Computed compute_vapour(const Figure& figure, activity::ModelKind model) {
     return {{}, "not computed by the engine", {}};
   const auto found = water_over(recipe, figure.t_C, model);
   if (!found) return {{}, text(found.problems()), {}};
-  return {std::exp(found->ln_activity) * *pure, found->doubt,
-          "times the pressure of pure water of the table"};
+  return {std::exp(found->ln_activity) * *pure, found->doubt, "times the pressure of pure water of the table",
+          std::exp(found->ln_activity) * *pure * found->u_ln_activity};
 }
 
 }  // namespace bathwright::reference

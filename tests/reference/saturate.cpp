@@ -8,17 +8,6 @@ namespace {
 
 using speciation::SolidRule;
 
-double volume_L(const Recipe& contents, double t_C, activity::ModelKind model) {
-  std::vector<std::string> species;
-  std::vector<double> mol;
-  for (const auto& [name, molality] : nominal_totals(contents, model)) {
-    species.push_back(name);
-    mol.push_back(molality);
-  }
-  const auto density = matter::SolutionDensity::for_species(species);
-  return density ? density->volume_L(mol, 1, {t_C}) : std::nan("");
-}
-
 /// The content in mol per kg of water of a solution of which `litres` hold a kg of water.
 double molality(const Content& content, double litres) {
   const double M = molar_mass(content.formula);
@@ -37,6 +26,21 @@ double molality(const Content& content, double litres) {
 
 /// Solids by salt: position in the system that the salts and the background make up.
 using Phases = std::vector<std::pair<std::string, std::size_t>>;
+
+/// At the background that is there: what follows from a change of volume is left out.
+void state_uncertainty(Saturated& found, const Phases& phases, const Mixture& mixture,
+                       const speciation::Task& task, const speciation::Equilibrium& answer) {
+  const auto& [salt, solid] = phases.front();
+  const double content = found.contents.at(salt);
+  const auto u = [&](const auto& of) {
+    return standard_uncertainty(*mixture.solver, task, answer, of).value_or(0);
+  };
+  found.u_contents = u([&](const speciation::Shift& shift) {
+    return -shift.solid_mol[solid] / answer.water_kg - content * shift.ln_water_kg;
+  });
+  found.u_water_activity =
+      u([&](const speciation::Shift& shift) { return found.water_activity * shift.ln_water_activity; });
+}
 
 Result<Saturated> saturate_with(const Phases& phases, const std::vector<Content>& background, double t_C,
                                 activity::ModelKind model) {
@@ -63,6 +67,7 @@ Result<Saturated> saturate_with(const Phases& phases, const std::vector<Content>
     const double change = std::abs(found.volume_L - litres) + std::abs(answer->water_kg - water_kg);
     if (background.empty() || change < settled) {
       found.doubt = doubt(*mixture->solver, *answer);
+      state_uncertainty(found, phases, *mixture, task, *answer);
       return found;
     }
     litres = found.volume_L;
@@ -96,6 +101,17 @@ Result<std::vector<std::size_t>> phases_of(const std::string& salt, const specia
 }
 
 }  // namespace
+
+double volume_L(const Recipe& contents, double t_C, activity::ModelKind model) {
+  std::vector<std::string> species;
+  std::vector<double> mol;
+  for (const auto& [name, molality] : nominal_totals(contents, model)) {
+    species.push_back(name);
+    mol.push_back(molality);
+  }
+  const auto density = matter::SolutionDensity::for_species(species);
+  return density ? density->volume_L(mol, 1, {t_C}) : std::nan("");
+}
 
 Result<Saturated> saturate(const std::vector<std::string>& salts, const std::vector<Content>& background,
                            double t_C, activity::ModelKind model) {

@@ -18,6 +18,8 @@ struct Saturated {
   double volume_L;  ///< of the solution that holds 1 kg of liquid water
   double water_activity;
   std::string doubt;
+  double u_contents = 0;  ///< standard uncertainty of the content of the first salt, mol per kg of water
+  double u_water_activity = 0;
 };
 
 /// Saturates with each of the salts. Of the solids that give a salt's ions (hydrates included) the least
@@ -26,5 +28,8 @@ struct Saturated {
 /// of the composition has a constant at the temperature, or as the solver does.
 Result<Saturated> saturate(const std::vector<std::string>& salts, const std::vector<Content>& background,
                            double t_C, activity::ModelKind model);
+
+/// The volume of the solution that holds these contents in 1 kg of liquid water; NaN where none is known.
+double volume_L(const Recipe& contents, double t_C, activity::ModelKind model);
 
 }  // namespace bathwright::reference
