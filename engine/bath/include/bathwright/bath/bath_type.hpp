@@ -96,8 +96,8 @@ struct IndicatorView {
   std::span<const double> quantity_g_per_L;
   std::span<const double> species_molality, species_activity;  ///< in the order of `species_names`
   std::span<const std::string> species_names;
-  double water_kg = not_given;  ///< liquid water
-  std::span<const std::string> solid_names;    ///< every solid that can form
+  double water_kg = not_given;                 ///< liquid water
+  std::span<const std::string> solid_names{};  ///< every solid that can form
   std::span<const double> saturation_index{};  ///< log10, in the order of `solid_names`
 };
 
