@@ -2,6 +2,12 @@
 #include <bathwright/bath/bath_type.hpp>
 
 namespace bathwright::bath {
+namespace {
+
+constexpr double faraday_C_per_mol = 96485.33212;  // CODATA 2018, exact by definition of e and N_A
+constexpr double seconds_per_hour = 3600;
+
+}  // namespace
 
 const Quantity* BathType::quantity(std::string_view wanted) const {
   const auto found =
@@ -12,6 +18,16 @@ const Quantity* BathType::quantity(std::string_view wanted) const {
 bool BathType::acid_by_pH() const {
   return std::any_of(components.begin(), components.end(),
                      [](const Component& c) { return c.found_by == FoundBy::pH; });
+}
+
+double metal_mol_per_Ah(const Use& use) { return seconds_per_hour / (use.electrons * faraday_C_per_mol); }
+
+units::GramsPerMole metal_of(const Quantity& deposited) {
+  units::GramsPerMole heaviest{};
+  for (const matter::Atom& atom : deposited.formula.atoms())
+    if (const auto element = matter::Formula::parse(atom.element))
+      heaviest = std::max(heaviest, element->molar_mass());
+  return heaviest;
 }
 
 }  // namespace bathwright::bath

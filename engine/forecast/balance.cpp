@@ -11,8 +11,6 @@ namespace {
 using bath::Chemistry;
 using bath::CountedIn;
 
-constexpr double seconds_per_h = 3600, faraday_C_per_mol = 96485.33212;  // CODATA 2018, exact
-
 Problem unknown(std::string what, std::string expected) {
   return {Fault::bad_input, "policy", std::move(what), std::move(expected), ""};
 }
@@ -106,23 +104,13 @@ class Compiler {
       take(compiled.metal, metal.formula, 1, use.id);
       neutralise(compiled.metal);
       if (use.counted_in == CountedIn::ampere_hour)
-        compiled.mol_per_unit = seconds_per_h / (use.electrons * faraday_C_per_mol);
+        compiled.mol_per_unit = bath::metal_mol_per_Ah(use);
       else if (use.counted_in == CountedIn::gram_deposited)
-        compiled.mol_per_unit = 1 / metal_g_per_mol(metal);
+        compiled.mol_per_unit = 1 / bath::metal_of(metal).v;
     }
     if (use.counted_in == CountedIn::hour || use.counted_in == CountedIn::m2_surface_hour)
       out_.always.push_back(out_.uses.size());
     out_.uses.push_back(std::move(compiled));
-  }
-
-  /// Of the element that is plated out: the heaviest of the quantity's formula is the metal, Au in Au(CN)2^-.
-  static double metal_g_per_mol(const bath::Quantity& metal) {
-    double heaviest = 0;
-    for (const matter::Atom& atom : metal.formula.atoms()) {
-      const auto element = matter::Formula::parse(atom.element);
-      if (element) heaviest = std::max(heaviest, element->molar_mass().v);
-    }
-    return heaviest;
   }
 
   void compile_feed(const Replenishment& rule) {

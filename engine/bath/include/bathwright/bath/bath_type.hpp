@@ -151,4 +151,11 @@ struct BathType {
   [[nodiscard]] bool acid_by_pH() const;  ///< H^+ follows from the pH, not from an analysis or the charges
 };
 
+/// Metal that an ampere-hour plates where all of the current does, mol: 3600 s/h / (z F).
+[[nodiscard]] double metal_mol_per_Ah(const Use& use);
+
+/// Molar mass of what is plated out of a quantity: the heaviest element of its formula is the metal, Au in
+/// Au(CN)2^-.
+[[nodiscard]] units::GramsPerMole metal_of(const Quantity& deposited);
+
 }  // namespace bathwright::bath
