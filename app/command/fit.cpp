@@ -12,13 +12,15 @@ Json json_of(const regression::Task& task, const regression::Fit& fit) {
   doc["provenance"] = regression::provenance(task);
   doc["model"] = activity::name(task.model);
   doc["found"] = Json::array();
-  for (const auto& found : fit.found)
-    doc["found"].push_back({{"constant", found.unknown.constant},
-                            {"parameter", regression::name(found.unknown.parameter)},
+  for (const auto& found : fit.found) {
+    const auto* interaction = std::get_if<activity::Interaction>(&found.unknown.what);
+    doc["found"].push_back({{interaction ? "interaction" : "constant", regression::owner(found.unknown)},
+                            {"parameter", regression::parameter_name(found.unknown)},
                             {"before", found.before},
                             {"value", found.value},
                             {"standard_error", found.standard_error},
-                            {"row", sheets::table_row(task, fit, found.unknown.constant)}});
+                            {"row", sheets::table_row(task, fit, found.unknown)}});
+  }
   const std::size_t n = fit.found.size();
   doc["covariance"] = Json::array();
   for (std::size_t i = 0; i < n; ++i)
@@ -28,9 +30,10 @@ Json json_of(const regression::Task& task, const regression::Fit& fit) {
   doc["degrees_of_freedom"] = fit.degrees_of_freedom;
   doc["reduced_chi2"] = fit.reduced_chi2;
   doc["fit_error"] = fit.fit_error;
-  doc["test_error"] = fit.test_error ? Json(*fit.test_error) : Json(nullptr);
-  doc["measurements"] = Json::array();
   const auto known = [](const std::optional<double>& value) { return value ? Json(*value) : Json(nullptr); };
+  doc["test_error"] = known(fit.test_error);
+  doc["test_error_before"] = known(fit.test_error_before);
+  doc["measurements"] = Json::array();
   for (const auto& row : fit.measurements)
     doc["measurements"].push_back({{"label", row.label},
                                    {"measured", row.measured},
@@ -56,7 +59,9 @@ int run(const Context& context, const std::string& path) {
 }  // namespace
 
 void add_fit(CLI::App& program, Context& context, Action& action) {
-  auto* verb = program.add_subcommand("fit", "constants from your own measurements")->fallthrough();
+  auto* verb =
+      program.add_subcommand("fit", "constants and interaction parameters from your own measurements")
+          ->fallthrough();
   auto path = std::make_shared<std::string>();
   verb->add_option("FILE", *path, "measurements and what to find, TOML")
       ->required()
@@ -77,7 +82,9 @@ void add_fit(CLI::App& program, Context& context, Action& action) {
       "  value = 0.62\n"
       "  uncertainty = 0.02\n"
       "\n"
-      "  bathwright fit boric-acid.toml\n");
+      "  bathwright fit boric-acid.toml\n"
+      "\n"
+      "An interaction parameter instead of a constant: interaction = [\"Cu^2+\", \"Na^+\"], find = [\"theta\"].\n");
   verb->callback([&context, &action, path] { action = [&context, path] { return run(context, *path); }; });
 }
 

@@ -24,12 +24,20 @@ ParameterSets parameter_sets_for(const std::map<std::string, double>& total_mola
 }
 
 Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::span<const Solute> solutes,
-                                                        units::Celsius t, ParameterSets sets) {
+                                                        units::Celsius t, ParameterSets sets,
+                                                        std::span<const Interaction> stated) {
   if (solutes.size() > max_solutes)
     return Problem{Fault::out_of_range, "", std::to_string(solutes.size()) + " dissolved species",
                    "at most " + std::to_string(max_solutes), ""};
   if (!(t.v >= 0 && t.v <= 100))
     return Problem{Fault::out_of_range, "temperature", std::to_string(t.v) + " degC", "0 to 100 degC", ""};
+  for (const Interaction& one : stated) {
+    if (const Outcome good = check(one); !good) return good.problems();
+    if (model_with(one.parameter) != kind)
+      return Problem{Fault::inconsistent_data, one.where,
+                     "the model " + std::string(name(kind)) + " has no " + text(one),
+                     "the model " + std::string(name(model_with(one.parameter))), ""};
+  }
   std::unique_ptr<const ActivityModel> model;
   switch (kind) {
     case ModelKind::davies:
@@ -39,10 +47,10 @@ Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::spa
       model = std::make_unique<DebyeHueckelModel>(solutes, t);
       break;
     case ModelKind::sit:
-      model = std::make_unique<SitModel>(solutes, t);
+      model = std::make_unique<SitModel>(solutes, t, stated);
       break;
     case ModelKind::pitzer:
-      model = std::make_unique<PitzerModel>(solutes, t, pitzer_parameters(solutes, t, sets));
+      model = std::make_unique<PitzerModel>(solutes, t, pitzer_parameters(solutes, t, sets, stated));
       break;
   }
   return model;

@@ -30,17 +30,17 @@ struct MixingRow {
   double t_C, value, slope;
   std::string quality, source;
 };
-using BinaryKey = std::tuple<std::string, std::string, std::string>;     ///< set, cation, anion
-using Interaction = std::pair<std::string, std::array<std::string, 3>>;  ///< kind, sorted names
-using MixingKey = std::pair<std::string, Interaction>;                   ///< set, interaction
+using BinaryKey = std::tuple<std::string, std::string, std::string>;    ///< set, cation, anion
+using MixingName = std::pair<std::string, std::array<std::string, 3>>;  ///< kind, sorted names
+using MixingKey = std::pair<std::string, MixingName>;                   ///< set, which
 
 struct Tables {
   std::map<BinaryKey, std::vector<BinaryRow>> binary;  ///< rows by rising temperature
   std::map<MixingKey, std::vector<MixingRow>> mixing;
-  std::set<Interaction> triplets;  ///< every psi, zeta and mu that some set holds
+  std::set<MixingName> triplets;  ///< every psi, zeta and mu that some set holds
 };
 
-Interaction interaction(std::string_view kind, std::string_view i, std::string_view j, std::string_view k) {
+MixingName mixing_name(std::string_view kind, std::string_view i, std::string_view j, std::string_view k) {
   std::array<std::string, 3> names{std::string(i), std::string(j), std::string(k)};
   std::sort(names.begin(), names.end());
   return {std::string(kind), std::move(names)};
@@ -70,7 +70,7 @@ const Tables& tables() {
         data::built_in_table("activity/pitzer_mixing.csv", {"t_C", "value", "dvalue_dT"});
     for (std::size_t i = 0; i < mixing.size(); ++i) {
       const data::CsvRow row = mixing[i];
-      Interaction who = interaction(row["kind"], row["i"], row["j"], row["k"]);
+      MixingName who = mixing_name(row["kind"], row["i"], row["j"], row["k"]);
       if (!row["k"].empty()) t.triplets.insert(who);
       t.mixing[{std::string(row["set"]), std::move(who)}].push_back(
           {row.number("t_C"), row.number("value"), row.number("dvalue_dT"), std::string(row["quality"]),
@@ -340,9 +340,14 @@ double usual_range(int cation_charge, int anion_charge) {
 
 class Collector {
  public:
-  Collector(std::span<const Solute> solutes, Celsius t, ParameterSets sets)
+  Collector(std::span<const Solute> solutes, Celsius t, ParameterSets sets,
+            std::span<const Interaction> stated)
       : solutes_(solutes), t_(t), sets_(sets), order_(sets_at_25(sets)) {
     for (std::uint32_t i = 0; i < solutes.size(); ++i) position_[solutes[i].name] = i;
+    for (const Interaction& one : stated) {
+      const std::string third = one.solutes.size() > 2 ? one.solutes[2] : "";
+      stated_[mixing_name(activity::name(one.parameter), one.solutes[0], one.solutes[1], third)] = &one;
+    }
   }
 
   PitzerParameters collect() {
@@ -394,7 +399,7 @@ class Collector {
                   });
   }
 
-  Served<MixingRow> mixing_rows(const Interaction& who) const {
+  Served<MixingRow> mixing_rows(const MixingName& who) const {
     return served(tables().mixing, nullptr, [&](const std::string& set) { return MixingKey{set, who}; });
   }
 
@@ -415,6 +420,25 @@ class Collector {
     return found;
   }
 
+  const Interaction* stated(const MixingName& who) const {
+    const auto found = stated_.find(who);
+    return found == stated_.end() ? nullptr : found->second;
+  }
+
+  /// Of beta0, beta1, beta2 and C_phi; null where nothing is stated.
+  std::array<const Interaction*, 4> stated_pair(std::uint32_t cation, std::uint32_t anion) const {
+    using enum InteractionParameter;
+    std::array<const Interaction*, 4> found{};
+    for (std::size_t k = 0; k < 4; ++k)
+      found[k] = stated(mixing_name(activity::name(std::array{beta0, beta1, beta2, cphi}[k]), name(cation),
+                                    name(anion), {}));
+    return found;
+  }
+  bool any_stated(std::uint32_t cation, std::uint32_t anion) const {
+    const auto of = stated_pair(cation, anion);
+    return std::any_of(of.begin(), of.end(), [](const Interaction* one) { return one != nullptr; });
+  }
+
   void find_outside() {
     outside_.assign(solutes_.size(), false);
     for (std::uint32_t i = 0; i < solutes_.size(); ++i) {
@@ -424,7 +448,7 @@ class Collector {
         if (solutes_[i].charge * solutes_[j].charge >= 0) continue;
         has_counter_ion = true;
         const auto [cation, anion] = solutes_[i].charge > 0 ? std::pair{i, j} : std::pair{j, i};
-        known = known || binary_rows(cation, anion);
+        known = known || binary_rows(cation, anion) || any_stated(cation, anion);
         // Only simple counter-ions decide: those of higher charge are themselves traces.
         if (std::abs(solutes_[j].charge) <= 2) estimable = estimable && type_of(cation, anion) != nullptr;
       }
@@ -451,34 +475,53 @@ class Collector {
   }
 
   void counter(std::uint32_t cation, std::uint32_t anion) {
-    const int zc = solutes_[cation].charge, za = solutes_[anion].charge;
+    const auto own = stated_pair(cation, anion);
     const Served<BinaryRow> rows = binary_rows(cation, anion);
-    if (!rows) {
-      const ChargeType* type = type_of(cation, anion);
-      if (type) {
-        const bool both_divalent = zc == 2 && za == -2;
-        found_.binary.push_back({cation, anion, type->median[0], type->median[1], type->median[2], 0,
-                                 both_divalent ? 1.4 : 2.0, 12});
-      }
+    std::optional<BinaryTerm> term = rows ? published(rows, cation, anion) : estimated(cation, anion);
+    if (any_stated(cation, anion)) {
+      if (!term) term = BinaryTerm{cation, anion, 0, 0, 0, 0, 2, 12};
+      take(own, rows, *term);
+    }
+    if (term) found_.binary.push_back(*term);
+  }
+
+  /// C = C_phi / (2 sqrt|z+ z-|)
+  double c_per_c_phi(std::uint32_t cation, std::uint32_t anion) const {
+    return 1 / (2 * std::sqrt(std::abs(solutes_[cation].charge * solutes_[anion].charge)));
+  }
+
+  std::optional<BinaryTerm> estimated(std::uint32_t cation, std::uint32_t anion) {
+    const ChargeType* type = type_of(cation, anion);
+    const auto own = stated_pair(cation, anion);
+    if (!own[0] || !own[1])
       note(Kind::missing, {cation, anion},
            type ? "not published; median of the published pairs of the same charges taken"
                 : "not published; zero taken")
           .u_ln_gamma = u_of_pair(cation, anion);
-      return;
-    }
+    if (!type) return std::nullopt;
+    const bool both_divalent = solutes_[cation].charge == 2 && solutes_[anion].charge == -2;
+    return BinaryTerm{cation,          anion, type->median[0],           type->median[1],
+                      type->median[2], 0,     both_divalent ? 1.4 : 2.0, 12};
+  }
+
+  static double value_at(const Served<BinaryRow>& rows, std::size_t k, Celsius t, bool& no_slope) {
+    return at_temperature(
+        rows, t, [k](const BinaryRow& r) { return r.value[k]; },
+        [k](const BinaryRow& r) { return r.slope[k]; }, no_slope);
+  }
+
+  BinaryTerm published(const Served<BinaryRow>& rows, std::uint32_t cation, std::uint32_t anion) {
+    const int zc = solutes_[cation].charge, za = solutes_[anion].charge;
     const BinaryRow& row = rows.row();
     bool no_slope = false;
     std::array<double, 4> v{};
-    for (std::size_t k = 0; k < 4; ++k)
-      v[k] = at_temperature(
-          rows, t_, [k](const BinaryRow& r) { return r.value[k]; },
-          [k](const BinaryRow& r) { return r.slope[k]; }, no_slope);
+    for (std::size_t k = 0; k < 4; ++k) v[k] = value_at(rows, k, t_, no_slope);
     // Where beta0 or beta1 has a published slope, an empty slope of beta2 or C_phi means "none needed".
     if (!rows.table && !(std::isnan(row.slope[0]) && std::isnan(row.slope[1]))) no_slope = false;
-    found_.binary.push_back({cation, anion, v[0], v[1], v[2], v[3] / (2 * std::sqrt(std::abs(zc * za))),
-                             row.alpha1, std::isnan(row.alpha2) ? 0 : row.alpha2});
-    note_quality(rows, {cation, anion}, "", u_of_pair(cation, anion));
-    if (is_published(row.quality)) note_accuracy(row, cation, anion);
+    if (!stated_pair(cation, anion)[0]) {
+      note_quality(rows, {cation, anion}, "", u_of_pair(cation, anion));
+      if (is_published(row.quality)) note_accuracy(row, cation, anion);
+    }
     if (no_slope)
       note(Kind::no_temperature_data, {cation, anion},
            "no temperature dependence published; the value at 25 degC taken")
@@ -486,6 +529,36 @@ class Collector {
     else if (away_from_25() && (moved_by_slope(rows, t_) || t_.v < reference_C))
       note_bend(rows, cation, anion);
     note_range(rows, cation, anion);
+    return {cation,     anion,
+            v[0],       v[1],
+            v[2],       v[3] * c_per_c_phi(cation, anion),
+            row.alpha1, std::isnan(row.alpha2) ? 0 : row.alpha2};
+  }
+
+  /// Puts what is stated into a pair. The published change with temperature stays; where there is none, the
+  /// change is as uncertain as any that nobody published.
+  void take(const std::array<const Interaction*, 4>& own, const Served<BinaryRow>& rows, BinaryTerm& term) {
+    std::array<double*, 4> into{&term.beta0, &term.beta1, &term.beta2, &term.c};
+    std::map<std::string, std::string> stated;  // names by source
+    bool unused = false;
+    for (std::size_t k = 0; k < 4; ++k) {
+      if (!own[k]) continue;
+      const double change =
+          rows ? value_at(rows, k, t_, unused) - value_at(rows, k, {reference_C}, unused) : 0;
+      *into[k] = (own[k]->value + change) * (k == 3 ? c_per_c_phi(term.cation, term.anion) : 1);
+      std::string& names = stated[own[k]->source];
+      names += (names.empty() ? "" : ", ") + std::string(activity::name(own[k]->parameter));
+    }
+    if (own[2] && term.alpha2 == 0) term.alpha2 = 12;
+    for (const auto& [source, names] : stated)
+      note(Kind::stated, {term.cation, term.anion}, names + ' ' + source).u_ln_gamma =
+          u_of_pair(term.cation, term.anion) * left_of_spread("regressed");
+    constexpr double noticed_K = 5;
+    const double away_K = std::abs(t_.v - reference_C);
+    if (!rows && away_K > noticed_K)
+      note(Kind::no_temperature_data, {term.cation, term.anion}, "the stated value at 25 degC taken")
+          .u_ln_gamma = doubts().slope_per_K * away_K *
+                        std::abs(solutes_[term.cation].charge * solutes_[term.anion].charge);
   }
 
   /// What two published fits of one salt differ by, reached at the end of the range.
@@ -564,61 +637,76 @@ class Collector {
     added.counted = std::move(counted);
   }
 
-  double mixing_value(const Served<MixingRow>& rows, std::vector<std::uint32_t> who, const char* what,
-                      double u_unknown) {
+  /// Nothing where it is neither published nor stated.
+  std::optional<double> mixing_value(const MixingName& which, std::vector<std::uint32_t> who,
+                                     double u_unknown) {
+    const Served<MixingRow> rows = mixing_rows(which);
+    const Interaction* own = stated(which);
+    if (!rows && !own) return std::nullopt;
     bool no_slope = false;
-    const double value = at_temperature(
-        rows, t_, [](const MixingRow& r) { return r.value; }, [](const MixingRow& r) { return r.slope; },
-        no_slope);
-    note_quality(rows, std::move(who), std::string(what) + " ", u_unknown);
-    return value;
+    const auto at = [&](Celsius t) {
+      return rows ? at_temperature(
+                        rows, t, [](const MixingRow& r) { return r.value; },
+                        [](const MixingRow& r) { return r.slope; }, no_slope)
+                  : 0;
+    };
+    if (!own) {
+      note_quality(rows, std::move(who), which.first + ' ', u_unknown);
+      return at(t_);
+    }
+    note(Kind::stated, std::move(who), which.first + ' ' + own->source).u_ln_gamma =
+        u_unknown * left_of_spread("regressed");
+    return own->value + at(t_) - at({reference_C});
   }
 
   void like(std::uint32_t i, std::uint32_t j) {
-    const Served<MixingRow> rows = mixing_rows(interaction("theta", name(i), name(j), {}));
-    const double theta = rows ? mixing_value(rows, {i, j}, "theta", doubts().theta) : 0;
-    if (rows)
-      published_thetas_.push_back({i, j});
+    const auto theta = mixing_value(mixing_name("theta", name(i), name(j), {}), {i, j}, doubts().theta);
+    if (theta)
+      known_thetas_.push_back({i, j});
     else
       note(Kind::missing, {i, j}, "theta not published; zero taken").u_ln_gamma = doubts().theta;
-    if (theta != 0 || solutes_[i].charge != solutes_[j].charge) found_.like_pairs.push_back({i, j, theta});
+    const double value = theta.value_or(0);
+    if (value != 0 || solutes_[i].charge != solutes_[j].charge) found_.like_pairs.push_back({i, j, value});
   }
 
   void neutral(std::uint32_t n, std::uint32_t other) {
-    const Served<MixingRow> rows = mixing_rows(interaction("lambda", name(n), name(other), {}));
-    if (rows) {
-      const double lambda = mixing_value(rows, {n, other}, "lambda", doubts().lambda);
-      if (lambda != 0) found_.neutral_pairs.push_back({n, other, lambda});
-    } else if (n != other) {
+    const auto lambda =
+        mixing_value(mixing_name("lambda", name(n), name(other), {}), {n, other}, doubts().lambda);
+    if (lambda && *lambda != 0) found_.neutral_pairs.push_back({n, other, *lambda});
+    if (!lambda && n != other)
       note(Kind::missing, {n, other}, "lambda not published; zero taken").u_ln_gamma = doubts().lambda;
-    }
   }
 
   void triplets() {
-    // Far fewer triplets are published than could be formed: walk the published ones and look the ions up.
-    for (const Interaction& who : tables().triplets) {
-      std::vector<std::uint32_t> at;
-      for (const std::string& member : who.second)
-        if (const auto found = position_.find(member); found != position_.end() && !outside_[found->second])
-          at.push_back(found->second);
-      if (at.size() != 3) continue;
-      const Served<MixingRow> rows = mixing_rows(who);
-      if (!rows) continue;  // only in a set that is not in use
-      const double value = mixing_value(rows, at, who.first.c_str(), doubts().psi);
-      if (value != 0) found_.triplets.push_back({at[0], at[1], at[2], value});
-    }
-    for (const LikeIons& pair : published_thetas_)
+    // Far fewer triplets are known than could be formed: walk the known ones and look the ions up.
+    for (const MixingName& who : tables().triplets) triplet(who);
+    for (const auto& [who, own] : stated_)
+      if (own->solutes.size() == 3 && !tables().triplets.contains(who)) triplet(who);
+    for (const LikeIons& pair : known_thetas_)
       for (std::uint32_t k = 0; k < solutes_.size(); ++k)
         if (solutes_[k].charge * solutes_[pair.i].charge < 0) note_missing_psi(pair, k);
+  }
+
+  void triplet(const MixingName& who) {
+    std::vector<std::uint32_t> at;
+    for (const std::string& member : who.second)
+      if (const auto found = position_.find(member); found != position_.end() && !outside_[found->second])
+        at.push_back(found->second);
+    if (at.size() != 3) return;
+    const auto value = mixing_value(who, at, doubts().psi);  // nothing: only in a set that is not in use
+    if (value && *value != 0) found_.triplets.push_back({at[0], at[1], at[2], *value});
   }
 
   /// Where all pairs of a triplet are known, what is left open is psi.
   void note_missing_psi(const LikeIons& pair, std::uint32_t counter) {
     const auto known = [&](std::uint32_t ion) {
-      return solutes_[ion].charge > 0 ? binary_rows(ion, counter) : binary_rows(counter, ion);
+      const auto [cation, anion] =
+          solutes_[ion].charge > 0 ? std::pair{ion, counter} : std::pair{counter, ion};
+      return binary_rows(cation, anion) || any_stated(cation, anion);
     };
     if (outside_[counter] || !known(pair.i) || !known(pair.j)) return;
-    if (mixing_rows(interaction("psi", name(pair.i), name(pair.j), name(counter)))) return;
+    const MixingName psi = mixing_name("psi", name(pair.i), name(pair.j), name(counter));
+    if (mixing_rows(psi) || stated(psi)) return;
     note(Kind::missing, {pair.i, pair.j, counter}, "psi not published; zero taken").u_ln_gamma = doubts().psi;
   }
 
@@ -627,15 +715,17 @@ class Collector {
   ParameterSets sets_;
   std::vector<std::string> order_;
   std::map<std::string, std::uint32_t> position_;
+  std::map<MixingName, const Interaction*> stated_;
   std::vector<bool> outside_;
-  std::vector<LikeIons> published_thetas_;
+  std::vector<LikeIons> known_thetas_;
   PitzerParameters found_;
 };
 
 }  // namespace
 
-PitzerParameters pitzer_parameters(std::span<const Solute> solutes, Celsius t, ParameterSets sets) {
-  return Collector(solutes, t, sets).collect();
+PitzerParameters pitzer_parameters(std::span<const Solute> solutes, Celsius t, ParameterSets sets,
+                                   std::span<const Interaction> stated) {
+  return Collector(solutes, t, sets, stated).collect();
 }
 
 }  // namespace bathwright::activity

@@ -56,6 +56,8 @@ struct PitzerParameters {
 ///   ion without any published pair, of a charge type with fewer than three published pairs: outside the
 ///   model like - like      theta = 0 (the electrostatic E-theta stays) triplets, neutral - anything    0; a
 ///   psi that is not published is noted where the pairs of its triplet are
-PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, ParameterSets sets);
+/// What is stated comes before all of this (activity/interaction.hpp) and counts as regressed.
+PitzerParameters pitzer_parameters(std::span<const Solute> solutes, units::Celsius t, ParameterSets sets,
+                                   std::span<const Interaction> stated);
 
 }  // namespace bathwright::activity

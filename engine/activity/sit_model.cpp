@@ -28,8 +28,11 @@ Kinds kinds_by_coefficients(std::span<const Solute> solutes, const SitParameters
 
 }  // namespace
 
-SitModel::SitModel(std::span<const Solute> solutes, units::Celsius t)
-    : SitModel(kinds_by_coefficients(solutes, sit_parameters(solutes, t)), sit_parameters(solutes, t), t) {}
+SitModel::SitModel(std::span<const Solute> solutes, units::Celsius t, std::span<const Interaction> stated)
+    : SitModel(solutes, sit_parameters(solutes, t, stated), t) {}
+
+SitModel::SitModel(std::span<const Solute> solutes, const SitParameters& parameters, units::Celsius t)
+    : SitModel(kinds_by_coefficients(solutes, parameters), parameters, t) {}
 
 SitModel::SitModel(const Kinds& kinds, const SitParameters& parameters, units::Celsius t)
     : ActivityModel(kinds.of),

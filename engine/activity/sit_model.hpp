@@ -1,6 +1,7 @@
 // Specific ion interaction theory: one coefficient for each cation and anion, with explicit complexes.
 #pragma once
 
+#include <bathwright/activity/interaction.hpp>
 #include <bathwright/activity/model.hpp>
 #include <bathwright/units/quantity.hpp>
 
@@ -31,7 +32,9 @@ struct SitParameters {
 ///   an anion of charge -z, with a univalent cation as with sodium   -0.05 z
 ///   two multivalent ions: no rule is published; 0 +/- 0.2
 ///   a neutral solute: 0, per mol/kg of the cations
-SitParameters sit_parameters(std::span<const Solute> solutes, units::Celsius t);
+/// A stated epsilon comes before all of this, without a term in log10 I.
+SitParameters sit_parameters(std::span<const Solute> solutes, units::Celsius t,
+                             std::span<const Interaction> stated);
 
 /// log10 gamma_i = -z_i^2 A s / (1 + 1.5 s) + sum_k epsilon(i, k) m_k,  s = sqrt(I), k of opposite charge.
 /// Source: Grenthe, Plyasunov & Spahiu 1997, in Modelling in Aquatic Chemistry, OECD, ch. IX; equation from
@@ -40,7 +43,7 @@ SitParameters sit_parameters(std::span<const Solute> solutes, units::Celsius t);
 /// borate and three nitrates) ln gamma is not exactly the gradient of a Gibbs energy.
 class SitModel final : public ActivityModel {
  public:
-  SitModel(std::span<const Solute> solutes, units::Celsius t);
+  SitModel(std::span<const Solute> solutes, units::Celsius t, std::span<const Interaction> stated);
   double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma) const override;
   double evaluate_kinds(std::span<const double> molality, std::span<double> ln_gamma,
                         std::span<double> derivative) const override;
@@ -53,6 +56,7 @@ class SitModel final : public ActivityModel {
     std::uint16_t cation, anion;  ///< kinds
     SitCoefficient epsilon;       ///< times ln 10
   };
+  SitModel(std::span<const Solute> solutes, const SitParameters& parameters, units::Celsius t);
   SitModel(const Kinds& kinds, const SitParameters& parameters, units::Celsius t);
 
   std::vector<int> charge_;  ///< per kind

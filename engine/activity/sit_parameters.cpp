@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <bathwright/data/tables.hpp>
 #include <cmath>
 #include <map>
@@ -49,7 +50,8 @@ Estimate estimated(int cation_charge, int anion_charge) {
 
 }  // namespace
 
-SitParameters sit_parameters(std::span<const Solute> solutes, units::Celsius t) {
+SitParameters sit_parameters(std::span<const Solute> solutes, units::Celsius t,
+                             std::span<const Interaction> stated) {
   using Kind = InteractionNote::Kind;
   constexpr double noticed_K = 5;
   SitParameters found;
@@ -72,6 +74,15 @@ SitParameters sit_parameters(std::span<const Solute> solutes, units::Celsius t) 
       const Solute &cation = solutes[i], &anion = solutes[j];
       if (cation.charge <= 0 || anion.charge >= 0) continue;
       const std::string names = cation.name + " - " + anion.name;
+      const Interaction here{InteractionParameter::epsilon, {cation.name, anion.name}, 0, {}, {}};
+      const auto own = std::find_if(stated.begin(), stated.end(),
+                                    [&](const Interaction& one) { return same_place(one, here); });
+      if (own != stated.end()) {
+        found.pairs.push_back({i, j, {own->value, 0}});
+        note(Kind::stated, {i, j}, names + ": epsilon " + own->source,
+             std::abs(t.v - 25) > noticed_K ? std::abs(t.v - 25) * sit_drift_per_K : 0);
+        continue;
+      }
       if (const auto row = published().find({cation.name, anion.name}); row != published().end()) {
         found.pairs.push_back({i, j, row->second.epsilon});
         if (std::abs(t.v - 25) > noticed_K)

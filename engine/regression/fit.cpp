@@ -3,10 +3,12 @@
 #include <bathwright/regression/fit.hpp>
 #include <bathwright/solution/solution.hpp>
 #include <cmath>
+#include <cstdio>
 
 namespace bathwright::regression {
 namespace {
 
+using activity::Interaction;
 using Eigen::Index;
 using speciation::Constant;
 using speciation::Equilibria;
@@ -28,38 +30,62 @@ double& field(Constant& constant, Parameter parameter) {
 Constant start_of(const Task& task, const std::string& name) {
   Constant constant = *task.equilibria.stated(name);
   for (const Unknown& unknown : task.unknowns) {
-    if (unknown.constant != name || unknown.parameter != Parameter::dCp_J_per_molK) continue;
+    const auto* of = std::get_if<OfConstant>(&unknown.what);
+    if (!of || of->constant != name || of->parameter != Parameter::dCp_J_per_molK) continue;
     constant.dCp_J_per_molK = constant.heat_capacity_at({25});
     constant.curve = {};
   }
   return constant;
 }
 
-/// Half the width of a central difference: each moves log10 K by about 1e-4 within the range of temperature.
-double step_of(Parameter parameter) {
+double start_of(const Task& task, const Unknown& unknown) {
+  if (const auto* interaction = std::get_if<Interaction>(&unknown.what)) {
+    for (const Interaction& stated : task.equilibria.interactions())
+      if (same_place(stated, *interaction)) return stated.value;
+    return activity::value_in_tables(*interaction);
+  }
+  const auto& of = std::get<OfConstant>(unknown.what);
+  Constant start = start_of(task, of.constant);
+  return field(start, of.parameter);
+}
+
+/// Half the width of a central difference: each moves log10 K by about 1e-4 within the range of temperature,
+/// an activity coefficient by as much at 1 mol/kg.
+double step_of(const Unknown& unknown) {
+  if (std::holds_alternative<Interaction>(unknown.what)) return 1e-4;
+  const Parameter parameter = std::get<OfConstant>(unknown.what).parameter;
   return parameter == Parameter::log10_K ? 1e-4 : parameter == Parameter::dH_kJ_per_mol ? 5e-3 : 0.5;
 }
 
 Result<Equilibria> equilibria_with(const Task& task, const Vector& unknowns) {
   std::map<std::string, Constant> changed;
+  std::vector<Interaction> stated;
   for (std::size_t k = 0; k < task.unknowns.size(); ++k) {
-    const Unknown& unknown = task.unknowns[k];
-    auto& constant = changed.emplace(unknown.constant, start_of(task, unknown.constant)).first->second;
-    field(constant, unknown.parameter) = unknowns(static_cast<Index>(k));
-    constant.has_dH = constant.has_dH || unknown.parameter != Parameter::log10_K;
+    const double value = unknowns(static_cast<Index>(k));
+    if (const auto* interaction = std::get_if<Interaction>(&task.unknowns[k].what)) {
+      stated.push_back(*interaction);
+      stated.back().value = value;
+      stated.back().source = provenance(task);
+      continue;
+    }
+    const auto& of = std::get<OfConstant>(task.unknowns[k].what);
+    auto& constant = changed.emplace(of.constant, start_of(task, of.constant)).first->second;
+    field(constant, of.parameter) = value;
+    constant.has_dH = constant.has_dH || of.parameter != Parameter::log10_K;
   }
-  Equilibria all = task.equilibria;
+  auto all = task.equilibria.with_interactions(stated);
   for (const auto& [name, constant] : changed) {
-    auto next = all.with_constant(name, constant);
-    if (!next) return next.problems();
-    all = *std::move(next);
+    if (!all) return all;
+    all = all->with_constant(name, constant);
   }
   return all;
 }
 
 Problem not_there(const Measurement& m) {
-  return {Fault::bad_input, m.where, m.of + " does not occur in the solution",
-          m.quantity == Quantity::solubility ? "a solid in excess" : "a species or gas that can form", ""};
+  const char* expected = "a species or gas that can form";
+  if (m.quantity == Quantity::solubility) expected = "a solid in excess";
+  if (m.quantity == Quantity::mean_activity_coefficient) expected = "a salt, acid or base of the solution";
+  return {Fault::bad_input, m.where, m.of + " does not occur in the solution", expected, ""};
 }
 
 Result<double> computed(const Measurement& m, activity::ModelKind model, const Equilibria& equilibria) {
@@ -77,6 +103,12 @@ Result<double> computed(const Measurement& m, activity::ModelKind model, const E
       return solved->pH;
     case Quantity::water_activity:
       return solved->water_activity;
+    case Quantity::osmotic_coefficient:
+      return solved->osmotic_coefficient;
+    case Quantity::mean_activity_coefficient:
+      if (const auto found = solved->mean_activity.find(m.of); found != solved->mean_activity.end())
+        return found->second;
+      return not_there(m);
     case Quantity::solubility:
       return of(solved->solids, [](const auto& solid) { return solid.dissolved_mol; });
     case Quantity::molality:
@@ -113,7 +145,7 @@ Result<Vector> residuals(const Task& task, const Vector& unknowns) {
 Result<Eigen::MatrixXd> slopes(const Task& task, const Vector& at, Index rows) {
   Eigen::MatrixXd slope(rows, at.size());
   for (Index k = 0; k < at.size(); ++k) {
-    const double step = step_of(task.unknowns[static_cast<std::size_t>(k)].parameter);
+    const double step = step_of(task.unknowns[static_cast<std::size_t>(k)]);
     Vector up = at, down = at;
     up(k) += step;
     down(k) -= step;
@@ -127,11 +159,16 @@ Result<Eigen::MatrixXd> slopes(const Task& task, const Vector& at, Index rows) {
 
 Outcome check(const Task& task) {
   Problems problems;
-  for (const Unknown& unknown : task.unknowns)
-    if (!task.equilibria.stated(unknown.constant))
+  for (const Unknown& unknown : task.unknowns) {
+    if (const auto* interaction = std::get_if<Interaction>(&unknown.what)) {
+      if (auto good = task.equilibria.with_interactions({*interaction}); !good)
+        problems.insert(problems.end(), good.problems().begin(), good.problems().end());
+    } else if (const auto& of = std::get<OfConstant>(unknown.what); !task.equilibria.stated(of.constant)) {
       problems.push_back({Fault::bad_input, unknown.where,
-                          "no species, solid or gas is called " + unknown.constant,
+                          "no species, solid or gas is called " + of.constant,
                           "the name of a row, as \"H3BO3\" or \"CaSO4.2H2O (gypsum)\"", ""});
+    }
+  }
   const auto fitted = static_cast<std::size_t>(std::count_if(
       task.measurements.begin(), task.measurements.end(), [](const auto& m) { return !m.held_out; }));
   if (task.unknowns.empty() || fitted < task.unknowns.size())
@@ -139,20 +176,49 @@ Outcome check(const Task& task) {
         {Fault::bad_input, task.measurements.empty() ? "" : task.measurements.front().where,
          std::to_string(fitted) + " measurements for " + std::to_string(task.unknowns.size()) + " unknowns",
          "at least one unknown and as many measurements that are not held out",
-         "Find fewer constants, or measure more."});
+         "Find fewer numbers, or measure more."});
   if (!problems.empty()) return problems;
   return Done{};
 }
 
-/// Unknowns that the measurements leave free, by columns that add nothing to the rank.
-Problem undetermined(const Task& task, const Eigen::ColPivHouseholderQR<Eigen::MatrixXd>& qr) {
-  std::string names;
-  for (Index k = qr.rank(); k < qr.cols(); ++k) {
-    const Unknown& unknown = task.unknowns[static_cast<std::size_t>(qr.colsPermutation().indices()(k))];
-    names += (names.empty() ? "" : ", ") + std::string(name(unknown.parameter)) + " of " + unknown.constant;
+/// What the measurements leave free: a direction in which the unknowns move and nothing computed does.
+///   null   (n, k), over the unknowns divided by `scale`
+Problems undetermined(const Task& task, const Eigen::MatrixXd& null, const Vector& scale) {
+  constexpr double takes_part = 0.01;
+  Problems problems;
+  for (Index k = 0; k < null.cols(); ++k) {
+    Vector direction = null.col(k).cwiseQuotient(scale);
+    std::vector<std::size_t> members;
+    Index largest = 0;
+    null.col(k).cwiseAbs().maxCoeff(&largest);
+    direction /= direction(largest);
+    std::string combination;
+    for (Index i = 0; i < null.rows(); ++i) {
+      if (std::abs(null(i, k)) < takes_part) continue;
+      members.push_back(static_cast<std::size_t>(i));
+      char share[32];
+      std::snprintf(share, sizeof share, "%+.3g", direction(i));
+      const Unknown& unknown = task.unknowns[members.back()];
+      combination += (combination.empty() ? "" : ", ") + std::string(share) + ' ' +
+                     std::string(parameter_name(unknown)) + " of " + owner(unknown);
+    }
+    const Unknown& first = task.unknowns[members.front()];
+    if (members.size() == 1)
+      problems.push_back(
+          {Fault::bad_input, first.where,
+           "the measurements do not determine " + std::string(parameter_name(first)) + " of " + owner(first),
+           "",
+           "Leave it out, or measure where it matters: dH and dCp need several temperatures, an "
+           "interaction needs its solutes."});
+    else
+      problems.push_back(
+          {Fault::bad_input, first.where,
+           "the measurements do not determine this combination, along which nothing computed "
+           "changes: " +
+               combination,
+           "", "Leave one of them out, or measure where they act apart, at other strengths or ratios."});
   }
-  return {Fault::bad_input, task.unknowns.front().where, "the measurements do not determine " + names, "",
-          "Leave it out, or measure where it matters: dH and dCp need several temperatures."};
+  return problems;
 }
 
 /// Relative for what is a ratio, a difference for a logarithm.
@@ -160,11 +226,13 @@ double error_of(Quantity quantity, double found, double measured) {
   return quantity == Quantity::pH ? found - measured : found / measured - 1;
 }
 
-std::optional<double> root_mean_square(const Task& task, const std::vector<Compared>& all, bool held_out) {
+///   which  &Compared::before or &Compared::computed
+std::optional<double> root_mean_square(const Task& task, const std::vector<Compared>& all, bool held_out,
+                                       std::optional<double> Compared::*which) {
   double sum = 0, count = 0;
   for (std::size_t k = 0; k < all.size(); ++k) {
-    if (all[k].held_out != held_out || !all[k].computed) continue;
-    sum += std::pow(error_of(task.measurements[k].quantity, *all[k].computed, all[k].measured), 2);
+    if (all[k].held_out != held_out || !(all[k].*which)) continue;
+    sum += std::pow(error_of(task.measurements[k].quantity, *(all[k].*which), all[k].measured), 2);
     ++count;
   }
   if (count == 0) return std::nullopt;
@@ -172,6 +240,17 @@ std::optional<double> root_mean_square(const Task& task, const std::vector<Compa
 }
 
 }  // namespace
+
+std::string_view parameter_name(const Unknown& unknown) {
+  if (const auto* interaction = std::get_if<Interaction>(&unknown.what))
+    return activity::name(interaction->parameter);
+  return name(std::get<OfConstant>(unknown.what).parameter);
+}
+
+std::string owner(const Unknown& unknown) {
+  if (const auto* interaction = std::get_if<Interaction>(&unknown.what)) return solutes_of(*interaction);
+  return std::get<OfConstant>(unknown.what).constant;
+}
 
 std::string_view name(Parameter parameter) {
   switch (parameter) {
@@ -193,6 +272,10 @@ std::string_view name(Quantity quantity) {
       return "pH";
     case Quantity::water_activity:
       return "water_activity";
+    case Quantity::osmotic_coefficient:
+      return "osmotic_coefficient";
+    case Quantity::mean_activity_coefficient:
+      return "mean_activity_coefficient";
     case Quantity::molality:
       return "molality";
     case Quantity::partial_pressure:
@@ -209,15 +292,14 @@ std::string provenance(const Task& task) {
 Result<Fit> fit(const Task& task) {
   if (Outcome good = check(task); !good) return good.problems();
   Vector at(static_cast<Index>(task.unknowns.size()));
-  for (std::size_t k = 0; k < task.unknowns.size(); ++k) {
-    Constant start = start_of(task, task.unknowns[k].constant);
-    at(static_cast<Index>(k)) = field(start, task.unknowns[k].parameter);
-  }
+  for (std::size_t k = 0; k < task.unknowns.size(); ++k)
+    at(static_cast<Index>(k)) = start_of(task, task.unknowns[k]);
   const Vector start = at;
 
   constexpr int most_steps = 50, most_halvings = 12;
   constexpr double settled = 1e-4;  // of a standard error
-  constexpr double rank_tolerance = 1e-8;
+  constexpr double rank_tolerance =
+      1e-6;  // of the largest singular value; above the noise of the differences
   auto residual = residuals(task, at);
   if (!residual) return residual.problems();
   Eigen::MatrixXd inverse;  // (J'J)^-1
@@ -226,15 +308,18 @@ Result<Fit> fit(const Task& task) {
     if (result.steps++ == most_steps)
       return Problem{Fault::not_converged, task.unknowns.front().where,
                      "the fit does not settle in " + std::to_string(most_steps) + " steps", "",
-                     "Start nearer, or find fewer constants."};
+                     "Start nearer, or find fewer numbers."};
     const auto slope = slopes(task, at, residual->size());
     if (!slope) return slope.problems();
-    // Columns of one length, so that the rank does not depend on units.
-    const Vector scale = slope->colwise().norm().cwiseMax(1e-300);
-    Eigen::ColPivHouseholderQR<Eigen::MatrixXd> qr(*slope * scale.cwiseInverse().asDiagonal());
-    qr.setThreshold(rank_tolerance);
-    if (qr.rank() < at.size()) return undetermined(task, qr);
-    const Vector step = -scale.cwiseInverse().cwiseProduct(Vector(qr.solve(*residual)));
+    // Columns of one length, so that the rank does not depend on units; a column of zeros stays one.
+    Vector scale = slope->colwise().norm();
+    scale = (scale.array() > 0).select(scale, 1);
+    Eigen::JacobiSVD<Eigen::MatrixXd> svd(*slope * scale.cwiseInverse().asDiagonal(),
+                                          Eigen::ComputeThinU | Eigen::ComputeFullV);
+    svd.setThreshold(rank_tolerance);
+    if (svd.rank() < at.size())
+      return undetermined(task, svd.matrixV().rightCols(at.size() - svd.rank()), scale);
+    const Vector step = -scale.cwiseInverse().cwiseProduct(Vector(svd.solve(*residual)));
     inverse = (slope->transpose() * *slope).inverse();
 
     double fraction = 1;
@@ -272,8 +357,9 @@ Result<Fit> fit(const Task& task) {
     if (const auto now = computed(m, task.model, *fitted)) row.computed = *now;
     result.measurements.push_back(std::move(row));
   }
-  result.fit_error = root_mean_square(task, result.measurements, false).value_or(0);
-  result.test_error = root_mean_square(task, result.measurements, true);
+  result.fit_error = root_mean_square(task, result.measurements, false, &Compared::computed).value_or(0);
+  result.test_error = root_mean_square(task, result.measurements, true, &Compared::computed);
+  result.test_error_before = root_mean_square(task, result.measurements, true, &Compared::before);
   return result;
 }
 

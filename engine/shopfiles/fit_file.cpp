@@ -18,7 +18,7 @@ std::optional<Enum> named(Table& table, const Key& key, const std::string& writt
                           std::initializer_list<Enum> all) {
   std::vector<std::string> names;
   for (const Enum one : all) {
-    names.emplace_back(regression::name(one));
+    names.emplace_back(name(one));
     if (names.back() == written) return one;
   }
   const auto meant = nearest(written, names);
@@ -27,14 +27,39 @@ std::optional<Enum> named(Table& table, const Key& key, const std::string& writt
   return std::nullopt;
 }
 
+/// Parameters of the activity model for some solutes.
+void read_interaction(Table& table, const speciation::Equilibria& built_in, regression::Task& task) {
+  using enum activity::InteractionParameter;
+  const Key key{"interaction", required, R"(["Cu^2+", "Na^+"])"},
+      find{"find", required, R"(["beta0", "beta1", "cphi"], ["theta"] or ["epsilon"])"};
+  activity::Interaction unknown;
+  unknown.solutes = table.texts(key);
+  unknown.where = table.where(key.name);
+  for (std::string& solute : unknown.solutes) solute = printable(solute);
+  for (const std::string& parameter : table.texts(find)) {
+    const auto known =
+        named(table, find, parameter, {beta0, beta1, beta2, cphi, theta, lambda, psi, zeta, mu, epsilon});
+    if (!known) continue;
+    unknown.parameter = *known;
+    task.unknowns.push_back({unknown, unknown.where});
+    if (const auto good = built_in.with_interactions({unknown}); !good)
+      table.report(key.name, good.problems());
+    else if (activity::model_with(*known) != task.model)
+      table.report(find.name,
+                   text(unknown) + " is not of the model " + std::string(activity::name(task.model)),
+                   "a parameter of that model",
+                   "Ask for model = \"" + std::string(activity::name(activity::model_with(*known))) + "\".");
+  }
+}
+
 /// A constant of the tables, or one that the file states with its reaction.
 void read_constant(Table& table, const speciation::Equilibria& built_in, regression::Task& task) {
-  const std::string name = table.text({"constant", required, R"("H3BO3")"});
+  const std::string name = printable(table.text({"constant", required, R"("H3BO3")"}));
   const Key find{"find", required, R"(["log10_K", "dH_kJ_per_mol", "dCp_J_per_molK"])"};
   for (const std::string& parameter : table.texts(find))
     if (const auto known = named(table, find, parameter,
                                  {Parameter::log10_K, Parameter::dH_kJ_per_mol, Parameter::dCp_J_per_molK}))
-      task.unknowns.push_back({name, *known, table.where("constant")});
+      task.unknowns.push_back({regression::OfConstant{name, *known}, table.where("constant")});
 
   const bool new_one = table.has("reaction");
   const std::string reaction = table.text({"reaction", optional, R"("NaNO3(s) = Na^+ + NO3^-")"});
@@ -77,16 +102,18 @@ regression::Measurement read_measurement(Table& table, std::string_view file) {
   m.where = table.where("value");
   m.recipe = read_recipe(table, file);
   m.label = table.text({"label", optional, R"("Tuesday, lab 2")"});
-  const Key quantity{"quantity", required,
-                     R"("solubility", "pH", "water_activity", "molality" or "partial_pressure")"};
+  const Key quantity{
+      "quantity", required,
+      R"("solubility", "pH", "water_activity", "osmotic_coefficient", "mean_activity_coefficient", )"
+      R"("molality" or "partial_pressure")"};
   const std::string written = table.text(quantity);
   if (!written.empty())
-    m.quantity = named(table, quantity, written,
-                       {Quantity::solubility, Quantity::pH, Quantity::water_activity, Quantity::molality,
-                        Quantity::partial_pressure})
-                     .value_or(Quantity::pH);
-  const bool of_solution = m.quantity == Quantity::pH || m.quantity == Quantity::water_activity;
-  m.of = table.text({"of", of_solution ? optional : required, R"("H3BO3")"});
+    m.quantity =
+        named(table, quantity, written,
+              {Quantity::solubility, Quantity::pH, Quantity::water_activity, Quantity::osmotic_coefficient,
+               Quantity::mean_activity_coefficient, Quantity::molality, Quantity::partial_pressure})
+            .value_or(Quantity::pH);
+  m.of = table.text({"of", of_solution(m.quantity) ? optional : required, R"("H3BO3")"});
   m.value = table.number({"value", required, "0.94"}, any_value).value_or(0);
   m.uncertainty = table.number({"uncertainty", required, "0.01"}, any_value).value_or(1);
   if (!(m.uncertainty > 0))
@@ -108,7 +135,7 @@ Result<regression::Task> read_fit_text(std::string_view name, std::string_view t
   task.model = read_model(root).value_or(activity::ModelKind::pitzer);
   const auto& built_in = speciation::Equilibria::built_in(activity::convention(task.model));
   for (Table& table : root.tables({"fit", required, R"({ constant = "H3BO3", find = ["dCp_J_per_molK"] })"}))
-    read_constant(table, built_in, task);
+    table.has("interaction") ? read_interaction(table, built_in, task) : read_constant(table, built_in, task);
   for (Table& table : root.tables({"measurement", required, R"({ quantity = "pH", value = 4.2, ... })"}))
     task.measurements.push_back(read_measurement(table, name));
   auto equilibria = built_in.with(task.own_species, task.own_solids);

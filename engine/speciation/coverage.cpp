@@ -86,6 +86,10 @@ Coverage coverage(const Solver& solver, const Equilibrium& answer) {
       case Kind::no_temperature_data:
         if (effect >= told) found.warnings.push_back(note.text);
         break;
+      case Kind::stated:
+        if (std::all_of(note.solutes.begin(), note.solutes.end(), matters))
+          found.warnings.push_back(note.text);
+        break;
       case Kind::accuracy:
         break;
       case Kind::above_range:

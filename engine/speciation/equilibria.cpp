@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <bathwright/activity/debye_huckel_slope.hpp>
+#include <bathwright/base/nearest.hpp>
 #include <bathwright/data/tables.hpp>
 #include <bathwright/speciation/equilibria.hpp>
 #include <bathwright/speciation/reaction.hpp>
@@ -268,6 +269,33 @@ Result<Equilibria> Equilibria::with_constant(std::string_view name, const Consta
   *found = constant;
   if (Outcome resolved = all.resolve(); !resolved) return resolved.problems();
   all.leave_out_held();
+  return all;
+}
+
+Result<Equilibria> Equilibria::with_interactions(const std::vector<activity::Interaction>& stated) const {
+  Equilibria all = *this;
+  Problems problems;
+  for (const activity::Interaction& one : stated) {
+    for (const std::string& solute : one.solutes) {
+      if (species_.contains(solute)) continue;
+      std::vector<std::string> names;
+      for (const auto& [name, data] : species_) names.push_back(name);
+      const auto close = nearest(solute, names);
+      problems.push_back({Fault::bad_input, one.where, "no dissolved species is called " + solute,
+                          "a species of the tables, as Na^+ or H3BO3",
+                          close ? "Did you mean " + *close + "?" : ""});
+    }
+    if (const Outcome good = activity::check(one); !good)
+      problems.insert(problems.end(), good.problems().begin(), good.problems().end());
+    if (const auto model = activity::model_with(one.parameter); activity::convention(model) != convention_)
+      problems.push_back({Fault::inconsistent_data, one.where,
+                          text(one) + " belongs to the model " + std::string(activity::name(model)),
+                          "a parameter of the model that is asked for",
+                          "Ask for the model " + std::string(activity::name(model)) + "."});
+    std::erase_if(all.interactions_, [&](const auto& other) { return same_place(one, other); });
+    all.interactions_.push_back(one);
+  }
+  if (!problems.empty()) return problems;
   return all;
 }
 

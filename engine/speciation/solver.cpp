@@ -15,7 +15,7 @@ Result<Solver> Solver::prepare(std::shared_ptr<const ChemicalSystem> system, act
         "Equilibria::built_in of the convention of the model", ""};
   std::vector<activity::Solute> solutes;
   for (const SystemSpecies& species : system->species()) solutes.push_back({species.name, species.charge});
-  auto model = activity::make_model(kind, solutes, t, {acid_set, system->zinc_set()});
+  auto model = activity::make_model(kind, solutes, t, {acid_set, system->zinc_set()}, system->interactions());
   if (!model) return model.problems();
   Solver solver;
   solver.system_ = std::move(system);

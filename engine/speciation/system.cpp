@@ -21,6 +21,7 @@ Result<ChemicalSystem> ChemicalSystem::make(const Equilibria& equilibria,
   ChemicalSystem system;
   system.convention_ = equilibria.convention();
   system.zinc_ = equilibria.zinc_set();
+  system.interactions_ = equilibria.interactions();
   system.components_.emplace_back("H^+");
   for (const std::string& name : components) {
     const auto& basis = equilibria.basis();

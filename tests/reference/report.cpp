@@ -95,10 +95,10 @@ std::vector<Line> compare_all() {
       if (table.with_davies && dilute(figure))
         lines.push_back({figure, ModelKind::davies, table.compute(figure, ModelKind::davies)});
     }
-  const auto fitted = by_row("fitted.csv", "constant");
+  const auto fitted = by_row("fitted.csv", "number");
   for (Line& line : lines)
-    if (const auto constant = fitted.find(line.figure.id); constant != fitted.end())
-      line.computed.not_covered = "fitted: log10 K of " + constant->second + " was regressed from this row";
+    if (const auto number = fitted.find(line.figure.id); number != fitted.end())
+      line.computed.not_covered = "fitted: " + number->second + " was regressed from this row";
   return lines;
 }
 

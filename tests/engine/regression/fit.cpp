@@ -14,11 +14,18 @@ const speciation::Equilibria& built_in() {
   return speciation::Equilibria::built_in(activity::Convention::interaction);
 }
 
+Unknown of_constant(const std::string& constant, Parameter parameter) {
+  Unknown unknown;
+  unknown.what.emplace<OfConstant>(OfConstant{constant, parameter});
+  unknown.where = "test";
+  return unknown;
+}
+
 Task boric_acid(std::vector<Parameter> find) {
   Task task;
   task.source = "made up";
   task.equilibria = built_in();
-  for (const Parameter parameter : find) task.unknowns.push_back({"H3BO3", parameter, "test"});
+  for (const Parameter parameter : find) task.unknowns.push_back(of_constant("H3BO3", parameter));
   return task;
 }
 
@@ -138,7 +145,7 @@ TEST_CASE("a constant is found from pH, free ion and water activity too", "[prop
     m.uncertainty = quantity == Quantity::pH ? 0.01 : 1e-6;
     Task task;
     task.equilibria = built_in();
-    task.unknowns = {{"HSO4^-", Parameter::log10_K, "test"}};
+    task.unknowns = {of_constant("HSO4^-", Parameter::log10_K)};
     task.measurements = {m};
     const auto found = fit(task);
     REQUIRE(found);
@@ -160,7 +167,7 @@ TEST_CASE("what cannot be determined is named", "[failure]") {
   CHECK(few.problems()[0].what == "1 measurements for 2 unknowns");
 
   Task unknown = boric_acid({Parameter::log10_K});
-  unknown.unknowns[0].constant = "H3BO4";
+  unknown.unknowns[0] = of_constant("H3BO4", Parameter::log10_K);
   unknown.measurements = {solubility(25, 0.9, 0.01)};
   const auto nobody = fit(unknown);
   REQUIRE_FALSE(nobody);

@@ -35,7 +35,7 @@ TEST_CASE("a fit file states what is to be found, from what, and what is held ou
   CHECK(task->source == "week 40");
   CHECK(task->model == activity::ModelKind::pitzer);
   REQUIRE(task->unknowns.size() == 1);
-  CHECK(task->unknowns[0].parameter == regression::Parameter::log10_K);
+  CHECK(parameter_name(task->unknowns[0]) == "log10_K");
   REQUIRE(task->equilibria.stated("XX"));
   CHECK(task->equilibria.stated("XX")->dH_kJ_per_mol == 20.4);
   REQUIRE(task->measurements.size() == 1);

@@ -6,10 +6,11 @@
 
 namespace bathwright::sheets {
 
-/// The row of engine/data/equilibria/solids.csv or species.csv that the fit proposes for a constant; empty
-/// for one that was fitted to a tank or is a gas.
+/// The row of a table of engine/data/equilibria or engine/data/activity that the fit proposes, "table: row",
+/// with all that was found for the same constant or the same solutes; empty for what was fitted to a tank or
+/// belongs to a gas.
 [[nodiscard]] std::string table_row(const regression::Task& task, const regression::Fit& fit,
-                                    const std::string& constant);
+                                    const regression::Unknown& unknown);
 
 [[nodiscard]] Lines fit_sheet(const regression::Task& task, const regression::Fit& fit,
                               std::string_view name);

@@ -1,6 +1,7 @@
 // Builds an activity model for a list of solutes at a temperature from the built-in constants.
 #pragma once
 
+#include <bathwright/activity/interaction.hpp>
 #include <bathwright/activity/model.hpp>
 #include <bathwright/base/result.hpp>
 #include <bathwright/units/quantity.hpp>
@@ -36,8 +37,11 @@ struct ParameterSets {
 [[nodiscard]] ParameterSets parameter_sets_for(const std::map<std::string, double>& total_molality);
 
 /// The model, prepared for the solutes in this order. t: 0-100 degC.
-/// Fails on more than max_solutes solutes or a temperature outside the range.
+///   stated  take the place of what the tables say, or stand where they say nothing
+/// Fails on more than max_solutes solutes, a temperature outside the range or a stated parameter of another
+/// model.
 Result<std::unique_ptr<const ActivityModel>> make_model(ModelKind kind, std::span<const Solute> solutes,
-                                                        units::Celsius t, ParameterSets sets = {});
+                                                        units::Celsius t, ParameterSets sets = {},
+                                                        std::span<const Interaction> stated = {});
 
 }  // namespace bathwright::activity

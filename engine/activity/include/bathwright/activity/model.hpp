@@ -33,7 +33,8 @@ struct Solute {
 /// kg of water per mol; the molar mass the published parameters were fitted with.
 inline constexpr double water_kg_per_mol = 0.0180153;
 
-/// Something about an interaction that a user must be able to see: it was missing, guessed, out of its range.
+/// Something about an interaction that a user must be able to see: it was missing, guessed, out of its range,
+/// somebody's own.
 struct InteractionNote {
   enum class Kind : std::uint8_t {
     missing,
@@ -41,7 +42,8 @@ struct InteractionNote {
     no_temperature_data,
     above_range,
     outside_model,
-    accuracy  ///< of the published itself: counts in every uncertainty, told only as part of the whole
+    accuracy,  ///< of the published itself: counts in every uncertainty, told only as part of the whole
+    stated     ///< by whoever asked for the model, beside the tables
   };
   Kind kind = Kind::missing;
   std::vector<std::uint32_t>

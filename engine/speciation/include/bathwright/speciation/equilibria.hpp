@@ -82,6 +82,12 @@ class Equilibria {
   /// stated() does not know.
   [[nodiscard]] Result<Equilibria> with_constant(std::string_view name, const Constant& constant) const;
 
+  /// These equilibria with parameters of their activity model stated beside the tables; one that is stated
+  /// again is replaced. Fails on solutes nobody knows, on a parameter that they cannot have and on one of a
+  /// model of the other convention.
+  [[nodiscard]] Result<Equilibria> with_interactions(const std::vector<activity::Interaction>& stated) const;
+  [[nodiscard]] const std::vector<activity::Interaction>& interactions() const { return interactions_; }
+
   [[nodiscard]] const std::map<std::string, SpeciesData>& species() const { return species_; }
   [[nodiscard]] const std::vector<SolidData>& solids() const { return solids_; }
   [[nodiscard]] const std::vector<GasData>& gases() const { return gases_; }
@@ -107,6 +113,7 @@ class Equilibria {
 
   activity::Convention convention_ = activity::Convention::association;
   activity::ZincSet zinc_ = activity::ZincSet::dilute;
+  std::vector<activity::Interaction> interactions_;
   std::vector<Fit> fits_;  ///< empty with association
 
   std::vector<std::string>

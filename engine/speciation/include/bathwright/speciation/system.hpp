@@ -38,6 +38,8 @@ class ChemicalSystem {
   /// The convention and the set for zinc that its constants belong to.
   [[nodiscard]] activity::Convention convention() const { return convention_; }
   [[nodiscard]] activity::ZincSet zinc_set() const { return zinc_; }
+  /// Parameters of the activity model that go with its constants.
+  [[nodiscard]] const std::vector<activity::Interaction>& interactions() const { return interactions_; }
   [[nodiscard]] const std::vector<SystemSpecies>& species() const { return species_; }
   [[nodiscard]] const std::vector<SystemSolid>& solids() const { return solids_; }
   [[nodiscard]] const std::vector<SystemSpecies>& gases() const { return gases_; }
@@ -50,6 +52,7 @@ class ChemicalSystem {
  private:
   activity::Convention convention_ = activity::Convention::association;
   activity::ZincSet zinc_ = activity::ZincSet::dilute;
+  std::vector<activity::Interaction> interactions_;
   std::vector<std::string> components_;
   std::vector<SystemSpecies> species_;
   std::vector<SystemSolid> solids_;
