@@ -180,6 +180,8 @@ std::string table_row(const regression::Task& task, const regression::Fit& fit,
   if (has("epsilon1")) row["epsilon1"] = row["epsilon2"] = "";  // what is found does not vary with I
   row["source"] = provenance(task);
   row["from_memory"] = interaction ? "no" : row["from_memory"];
+  if (has("max_molality") && row["max_molality"].empty())
+    errors += "max_molality to be filled in: where the measurements end, ";
   row["note"] = errors + "fit error " + percent(fit.fit_error) +
                 (fit.test_error ? ", error of what was held out " + percent(*fit.test_error) : "");
   return path + ": " + csv(data::built_in_table(path, {}), row);

@@ -22,6 +22,7 @@ const std::vector<Target> targets = {
     {"readings_file", fuzz::readings_file},
     {"solution_file", fuzz::solution_file},
     {"described_file", fuzz::described_file, 500},  // as plugin_tables; most inputs are no TOML
+    {"fit_file", fuzz::fit_file, 500},              // each input that reads builds the equilibria anew
     {"formula", fuzz::formula},
     {"quantity", fuzz::quantity},
     {"csv_table", fuzz::csv_table},

@@ -14,6 +14,7 @@ BrokenPromise tank_file(std::string_view input);
 BrokenPromise readings_file(std::string_view input);
 BrokenPromise solution_file(std::string_view input);
 BrokenPromise described_file(std::string_view input);
+BrokenPromise fit_file(std::string_view input);
 BrokenPromise formula(std::string_view input);
 BrokenPromise quantity(std::string_view input);
 BrokenPromise csv_table(std::string_view input);

@@ -46,6 +46,27 @@ TEST_CASE("a fit file states what is to be found, from what, and what is held ou
   CHECK(m.recipe.ingredients.size() == 1);
 }
 
+TEST_CASE("a fit file may ask for interaction parameters", "[unit]") {
+  const auto task = read_fit_text("fit.toml", R"(source = "week 40"
+[[fit]]
+interaction = ["Cu^2+", "Na^+"]
+find = ["theta"]
+[[measurement]]
+temperature = "25 degC"
+per_kg_water = { "NaCl" = 0.5, "CuCl2" = 0.2 }
+quantity = "osmotic_coefficient"
+value = 0.9
+uncertainty = 0.01
+)");
+  INFO((task ? std::string{} : text(task.problems())));
+  REQUIRE(task);
+  REQUIRE(task->unknowns.size() == 1);
+  CHECK(parameter_name(task->unknowns[0]) == "theta");
+  CHECK(owner(task->unknowns[0]) == "Cu^2+ - Na^+");
+  CHECK(task->unknowns[0].where == "fit.toml:3: fit.interaction");
+  CHECK(task->measurements[0].quantity == regression::Quantity::osmotic_coefficient);
+}
+
 TEST_CASE("a fit file that does not read names the line and the mend", "[failure]") {
   const std::string text(good);
   const auto with = [&](const std::string& old, const std::string& put) {
@@ -62,4 +83,16 @@ TEST_CASE("a fit file that does not read names the line and the mend", "[failure
   CHECK(with(R"(quantity = "solubility")", R"(quantity = "solubilty")").find("Did you mean solubility?") !=
         std::string::npos);
   CHECK(with("\nof = \"XX\"", "").find("of") != std::string::npos);
+  const auto with_interaction = [&](const std::string& solutes, const std::string& parameter) {
+    return with(
+        "constant = \"XX\"\nfind = [\"log10_K\"]\nreaction = \"NaNO3(s) = Na^+ + NO3^-\"\nformula = "
+        "\"NaNO3\"\nlog10_K = 1.0\ndH_kJ_per_mol = 20.4\n",
+        "interaction = " + solutes + "\nfind = [\"" + parameter + "\"]\n");
+  };
+  CHECK(with_interaction(R"(["Na^+", "SO4^2"])", "beta0").find("Did you mean SO4^2-?") != std::string::npos);
+  CHECK(with_interaction(R"(["Na^+", "K^+"])", "beta0")
+            .find("fit.toml:3: fit.interaction: there is no beta0") != std::string::npos);
+  CHECK(with_interaction(R"(["Na^+", "Cl^-"])", "beta").find("Did you mean beta0?") != std::string::npos);
+  CHECK(with_interaction(R"(["Na^+", "Cl^-"])", "epsilon").find("belongs to the model sit") !=
+        std::string::npos);
 }
