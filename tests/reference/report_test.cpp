@@ -79,7 +79,9 @@ TEST_CASE("no fewer rows lie inside their tolerance than when this was written",
   CHECK(inside[{"mean_activity", ModelKind::pitzer}] >= 180);
   CHECK(inside[{"mean_activity", ModelKind::davies}] >= 9);
   CHECK(inside[{"osmotic", ModelKind::pitzer}] >= 76);
-  CHECK(inside[{"mixed", ModelKind::pitzer}] >= 52);
+  // 52 until psi of copper was regressed from 13 of them, 8 of which had been inside; of the rest two came in
+  // and MX-0048 went out.
+  CHECK(inside[{"mixed", ModelKind::pitzer}] >= 45);
   CHECK(inside[{"isopiestic", ModelKind::pitzer}] >= 16);
   CHECK(inside[{"vapour", ModelKind::pitzer}] >= 12);
   CHECK(inside[{"ph", ModelKind::pitzer}] >= 83);
