@@ -52,8 +52,10 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
   append(lines, levels(judged));
   heading(lines, "In solution");
   append(lines, free_ions(type, view.species));
-  heading(lines, "Headroom");
-  append(lines, headroom(tank, view.headroom));
+  if (!view.headroom.empty()) {
+    heading(lines, "Headroom");
+    append(lines, headroom(tank, view.headroom));
+  }
   const auto uncertain = [](const bath::SpeciesView& s) { return s.u_log10_activity.has_value(); };
   if (std::any_of(view.species.begin(), view.species.end(), uncertain))
     say(lines,
