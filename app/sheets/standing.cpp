@@ -40,8 +40,10 @@ Standing standing(const bath::Tank& tank, const bath::BathType& type, std::strin
 
 namespace {
 
-/// What the substance is called on the bags of the tank's shelf, else by the bath type.
+/// A salt as it is called on the bags of the tank's shelf; all else, and free acid above all, by the bath
+/// type.
 std::string called(const bath::Tank& tank, const bath::Quantity& quantity) {
+  if (!quantity.salt_view) return quantity.label;
   for (const bath::ShelfItem& item : tank.shelf)
     if (item.stock.formula == quantity.formula.text()) return item.stock.name;
   return quantity.label;
