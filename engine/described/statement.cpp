@@ -110,7 +110,7 @@ void Statement::report(const std::vector<plugin_host::Place>& places, const Prob
     if (place.row > 0 && rows != places_.end() && place.row <= rows->second.size()) {
       const Row& row = rows->second[place.row - 1];
       at.table = row.table;
-      if (!row.key.empty()) at.key = row.key;
+      if (row.key) at.key = *row.key;
       if (place.table == "quantities" && !at.table.has(at.key)) at.key = "id";  // what it stands for
     }
     if (!at.table.reported(at.key)) found.push_back(std::move(at));
@@ -121,9 +121,7 @@ void Statement::report(const std::vector<plugin_host::Place>& places, const Prob
 
 // ---- One value
 
-const char* Statement::keep(std::string text) {
-  return text.empty() ? nullptr : texts_.emplace_back(std::move(text)).c_str();
-}
+const char* Statement::keep(std::string text) { return texts_.emplace_back(std::move(text)).c_str(); }
 
 double Statement::number(Table& table, const Key& key) { return table.number(key).value_or(unknown); }
 
@@ -185,7 +183,7 @@ bw_datum Statement::efficiency(Table& use, const char* name, std::uint32_t sourc
 std::vector<toml_schema::Table> Statement::rows(const char* name) {
   const auto key = std::ranges::find(table_names, name, &TableName::table)->key;
   std::vector<Table> found = root_.tables({key, optional, ""});
-  for (const Table& table : found) places_[name].push_back({table, ""});
+  for (const Table& table : found) places_[name].push_back({table, {}});
   return found;
 }
 
@@ -221,7 +219,7 @@ void Statement::read_sources() {
   for (const std::string& key : table->names()) {
     auto row = table->table({key, required, "{ citation = \"...\" }"});
     if (!row) continue;
-    places_["sources"].push_back({*row, ""});
+    places_["sources"].push_back({*row, {}});
     sources_.push_back({keep(key), text(*row, {"citation", required, "\"Author, Title, year, page\""}),
                         text(*row, {"terms", optional, "\"facts\""})});
   }
@@ -252,7 +250,7 @@ void Statement::read_quantities() {
     const Terms counts = terms(row, {"counts", optional, R"({ "Ni^2+" = 1 })"});
     quantity.counts = counts.first;
     quantity.count = counts.count;
-    if (!row.has("counts") && quantity.id) {
+    if (!row.has("counts")) {
       terms_.push_back({{quantity.id, 1}});
       quantity.counts = terms_.back().data();
       quantity.count = 1;
@@ -270,7 +268,7 @@ void Statement::read_own_species() {
     species.reaction = text(row, {"reaction", optional, "\"Ni^2+ + OH^- = NiOH^+\""});
     const std::uint32_t from = source(row);
     // A basis species, made of nothing else, has no constant.
-    species.log10_K = datum(row, {"log10_K", species.reaction ? required : optional, "4.1"}, from);
+    species.log10_K = datum(row, {"log10_K", *species.reaction ? required : optional, "4.1"}, from);
     species.log10_K.spread = number(row, {"uncertainty", optional, "0.2"});
     species.dH_kJ_per_mol = datum(row, {"dH_kJ_per_mol", optional, "-5"}, from);
     species.dCp_J_per_mol_K = datum(row, {"dCp_J_per_mol_K", optional, "0"}, from);
@@ -404,9 +402,9 @@ void Statement::read_indicators() {
 Known Statement::known() const {
   Known known;
   for (const bw_quantity& quantity : quantities_)
-    if (quantity.id) known.quantities.emplace_back(quantity.id);
+    if (*quantity.id) known.quantities.emplace_back(quantity.id);
   for (const bw_watched_solid& solid : watched_solids_)
-    if (solid.name) known.solids.emplace_back(solid.name);
+    if (*solid.name) known.solids.emplace_back(solid.name);
   const auto is_component = [&](const auto& part) {
     return std::ranges::any_of(components_, [&](const bw_component& c) { return part.first == c.species; });
   };
@@ -418,7 +416,7 @@ Known Statement::known() const {
   for (const auto& [name, species] : speciation::Equilibria::built_in(convention, zinc).species())
     if (std::ranges::all_of(species.made_of, is_component)) known.species.push_back(name);
   for (const bw_own_species& own : own_species_)
-    if (own.name) known.species.emplace_back(own.name);
+    if (*own.name) known.species.emplace_back(own.name);
   return known;
 }
 

@@ -36,7 +36,7 @@ class Statement {
   /// Where a row stands: a table of the file, or a key of one.
   struct Row {
     Table table;
-    std::string key;
+    std::optional<std::string> key;
   };
   struct Terms {
     const bw_term* first = nullptr;
@@ -47,7 +47,7 @@ class Statement {
     std::uint32_t code;
   };
 
-  const char* keep(std::string text);
+  const char* keep(std::string text);  ///< never null: to the interface "" is as good
   const char* text(Table& table, const Key& key) { return keep(table.text(key)); }
   static double number(Table& table, const Key& key);
   static std::uint32_t word(Table& table, const Key& key, std::span<const Word> words);

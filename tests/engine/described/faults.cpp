@@ -82,6 +82,7 @@ TEST_CASE("each fault is refused at its line", "[failure][described]") {
       {"{ value = 0.99 }", "{ valu = 0.99 }", "valu =", "use.cathode_efficiency.valu",
        "is not a key of this table"},
       {"[[watched]]", "[watched]", "[watched]", "watched", "is not a list of tables"},
+      {"\"Cu^2+\" = \"analysis\"", "\"\" = \"analysis\"", "\"\" =", "components", "is missing"},
       // indicators
       {"value = { g_per_L = { \"H2SO4\"", "value = { g_per_L = { \"H2SO3\"", "H2SO3",
        "indicator.value.g_per_L.H2SO3", "is not a quantity"},
