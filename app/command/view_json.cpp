@@ -59,7 +59,8 @@ Json analysis_document(const bath::Tank& tank, const bath::BathType& type,
                               {"unit", "g/L"},
                               {"standard_uncertainty", level.standard_uncertainty.v},
                               {"from", analysis::name(level.from)},
-                              {"how", level.how}});
+                              {"how", level.how},
+                              {"interferences", level.interferences}});
   doc["reconciled"] = doc["results"];  // the levels the state is made of: nothing moves them in this version
   doc["suspects"] = Json::array();
   for (const auto& suspect : analysis.suspects)

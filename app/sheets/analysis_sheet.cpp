@@ -26,6 +26,9 @@ Lines analysis_sheet(const bath::Tank& tank, const bath::BathType& type, const a
                level.how.empty() ? std::string(analysis::name(level.from)) : level.how});
   append(lines, found.lines());
   say(lines, "  +/- is one standard uncertainty.");
+  for (const auto& level : a.results)
+    if (!level.interferences.empty())
+      say(lines, "  " + pretty(level.quantity) + ", interferences: " + level.interferences, 4);
   heading(lines, "Against the window");
   const auto judged = judge(tank, type, a);
   append(lines, levels(judged));

@@ -215,7 +215,7 @@ void Evaluation::take_from_book(const bath::Component& component) {
     levels_.take_none_of(component.species);
     note(fmt::format("{} was not analysed and the book has none: taken as 0", called));
   } else {
-    const auto titrations = methods_for(called);
+    const auto titrations = has_quantity ? methods_for(*own) : std::vector<std::string>{};
     refuse(called, "no level is given and the book has none", "",
            titrations.empty() ? "State it as a concentration found."
                               : fmt::format("Titrate it ({}), or state it as a concentration found.",
@@ -243,7 +243,8 @@ void Evaluation::add_result(const bath::Quantity& quantity) {
                                {level->mol_per_L * molar_mass},
                                {level->u_mol_per_L * molar_mass},
                                level->from,
-                               std::move(how)});
+                               std::move(how),
+                               direct != used_.end() ? direct->interferences : ""});
 }
 
 void Evaluation::list_levels() {

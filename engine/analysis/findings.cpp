@@ -39,35 +39,56 @@ Result<const bath::Quantity*> quantity_to_find(const bath::BathType& type, const
   return quantity;
 }
 
-Result<const Method*> method_that_finds(const bath::Quantity& quantity, const Titration& titration) {
-  const auto fitting = methods_for(quantity.id);
+/// Free and total are told apart by what a quantity counts: the total a single component, the free what its
+/// complexes leave of it.
+bool wrong_share(const Method& method, const bath::Quantity& quantity, const bath::BathType& type) {
+  const auto is_free = [](const bath::Quantity& q) { return q.counts.size() > 1; };
+  if (method.share == Share::total) return is_free(quantity);
+  return method.share == Share::free && !is_free(quantity) &&
+         std::ranges::any_of(type.quantities, [&](const bath::Quantity& other) {
+           return is_free(other) && quantity_per_analyte(method, other);
+         });
+}
+
+Result<const Method*> method_that_finds(const bath::Quantity& quantity, const bath::BathType& type,
+                                        const std::string& id, const std::string& where) {
+  const auto fitting = methods_for(quantity);
   const std::string mend = fitting.empty()
                                ? "No titration in the table finds it: state it as a concentration found."
                                : fmt::format("Use {}.", fmt::join(fitting, " or "));
-  const std::string where = titration.written.where("method", titration.where);
-  const Method* known = method(titration.method);
+  const Method* known = method(id);
   if (!known) {
     std::vector<std::string> ids;
     for (const Method& m : methods()) ids.push_back(m.id);
-    return Problem{Fault::bad_input, where, fmt::format("there is no titration \"{}\"", titration.method),
-                   "a titration of " + quantity.id,
-                   nearest(titration.method, ids) ? did_you_mean(titration.method, ids) : mend};
+    return Problem{Fault::bad_input, where, fmt::format("there is no method \"{}\"", id),
+                   "a method for " + quantity.id, nearest(id, ids) ? did_you_mean(id, ids) : mend};
   }
-  if (known->analyte != quantity.id)
+  if (!quantity_per_analyte(*known, quantity))
     return Problem{Fault::bad_input, where, fmt::format("{} does not find {}", known->id, quantity.id),
-                   "a titration of " + quantity.id, mend};
+                   "a method for " + quantity.id, mend};
+  if (wrong_share(*known, quantity, type))
+    return Problem{Fault::bad_input, where,
+                   fmt::format("{} finds the {} amount, {} is the {}", known->id,
+                               known->share == Share::free ? "free" : "total", quantity.id,
+                               known->share == Share::free ? "total" : "free"),
+                   "a method and a quantity that mean the same",
+                   "Name the other quantity or the other method."};
   return known;
 }
 
 Result<Finding> finding_of(const Titration& titration, const bath::BathType& type) {
   const auto quantity = quantity_to_find(type, titration.quantity, titration.where);
   if (!quantity) return quantity.problems();
-  const auto chosen = method_that_finds(**quantity, titration);
+  const auto chosen = method_that_finds(**quantity, type, titration.method,
+                                        titration.written.where("method", titration.where));
   if (!chosen) return chosen.problems();
-  const auto result = work_out(titration, **chosen, (*quantity)->formula.molar_mass());
+  const Method& method = **chosen;
+  const auto result = work_out(titration, method,
+                               *quantity_per_analyte(method, **quantity) * (*quantity)->formula.molar_mass());
   if (!result) return result.problems();
-  return Finding{*quantity,         result->value.v, result->standard_uncertainty.v,
-                 Origin::titration, result->how,     titration.where};
+  return Finding{*quantity,           result->value.v, result->standard_uncertainty.v,
+                 Origin::titration,   result->how,     titration.where,
+                 method.interferences};
 }
 
 Result<Finding> finding_of(const Found& found, const bath::BathType& type,
@@ -90,15 +111,23 @@ Result<Finding> finding_of(const Found& found, const bath::BathType& type,
   const auto value = in_grams_per_litre(found.value, "the concentration");
   if (!value) return value.problems();
   Finding finding{*quantity, *value, 0, Origin::found, show(found.value) + " found", found.where};
+  const Method* by = nullptr;
+  if (!found.method.empty()) {
+    const auto chosen = method_that_finds(**quantity, type, found.method, found.method_where);
+    if (!chosen) return chosen.problems();
+    by = *chosen;
+    finding.how += " by " + by->id;
+    finding.interferences = by->interferences;
+  }
   if (found.uncertainty) {
     const auto u = in_grams_per_litre(*found.uncertainty, "its uncertainty");
     if (!u) return u.problems();
     finding.u_g_per_L = *u;
   } else {
-    const double relative = uncertainty_term("found");
+    const double relative = by ? by->u_method_rel : uncertainty_term("found");
     finding.u_g_per_L = relative * *value;
-    notes.push_back(fmt::format("{} was found without an uncertainty: {:g} % taken (common practice)",
-                                found.quantity, 100 * relative));
+    notes.push_back(fmt::format("{} was found without an uncertainty: {:g} % taken ({})", found.quantity,
+                                100 * relative, by ? "repeatability of the method" : "common practice"));
   }
   return finding;
 }
@@ -107,8 +136,10 @@ Finding mean_of(const std::vector<Finding>& same) {
   const auto n = static_cast<double>(same.size());
   Finding mean = same.front();
   double sum = 0, sum_of_u2 = 0, sum_of_squares = 0;
-  std::vector<std::string_view> hows;
+  std::vector<std::string_view> hows, interferences;
   for (const Finding& f : same) {
+    if (!f.interferences.empty() && std::ranges::count(interferences, f.interferences) == 0)
+      interferences.push_back(f.interferences);
     sum += f.g_per_L;
     sum_of_u2 += f.u_g_per_L * f.u_g_per_L;
     mean.from = std::max(mean.from, f.from);
@@ -118,6 +149,7 @@ Finding mean_of(const std::vector<Finding>& same) {
   for (const Finding& f : same) sum_of_squares += std::pow(f.g_per_L - mean.g_per_L, 2);
   mean.u_g_per_L = std::sqrt(std::max(sum_of_u2 / n, sum_of_squares / (n - 1)));
   mean.how = fmt::format("mean of {}: {}", same.size(), fmt::join(hows, "; "));
+  mean.interferences = fmt::format("{}", fmt::join(interferences, "; "));
   return mean;
 }
 

@@ -14,7 +14,7 @@ struct Finding {
   const bath::Quantity* quantity = nullptr;
   double g_per_L = 0, u_g_per_L = 0;
   Origin from = Origin::titration;
-  std::string how, where;
+  std::string how, where, interferences{};
 };
 
 class Levels {

@@ -30,6 +30,11 @@ const ToleranceBySize& pipettes() {
   return glass;
 }
 
+const ToleranceBySize& flasks() {
+  static const ToleranceBySize glass = class_a("flask");
+  return glass;
+}
+
 std::optional<double> u_of_smallest(const ToleranceBySize& glass, double volume_mL) {
   constexpr double round_off = 1e-9;  // 10 mL typed and carried in litres may come back as 10.000000000000002
   const auto holds = glass.lower_bound(volume_mL * (1 - round_off));
@@ -41,8 +46,10 @@ std::optional<double> u_of_smallest(const ToleranceBySize& glass, double volume_
 
 std::optional<double> u_burette_mL(double volume_mL) { return u_of_smallest(burettes(), volume_mL); }
 std::optional<double> u_pipette_mL(double volume_mL) { return u_of_smallest(pipettes(), volume_mL); }
+std::optional<double> u_flask_mL(double volume_mL) { return u_of_smallest(flasks(), volume_mL); }
 double largest_burette_mL() { return burettes().rbegin()->first; }
 double largest_pipette_mL() { return pipettes().rbegin()->first; }
+double largest_flask_mL() { return flasks().rbegin()->first; }
 
 double uncertainty_term(std::string_view id) {
   static const auto terms = [] {

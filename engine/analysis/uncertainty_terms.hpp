@@ -7,12 +7,14 @@
 
 namespace bathwright::analysis {
 
-/// Standard uncertainty, mL, of the volume from the smallest class A burette or pipette that holds
+/// Standard uncertainty, mL, of the volume from the smallest class A burette, pipette or flask that holds
 /// `volume_mL`: tolerance/sqrt 6, a triangular distribution. Nothing where none in the table is large enough.
 [[nodiscard]] std::optional<double> u_burette_mL(double volume_mL);
 [[nodiscard]] std::optional<double> u_pipette_mL(double volume_mL);
+[[nodiscard]] std::optional<double> u_flask_mL(double volume_mL);
 [[nodiscard]] double largest_burette_mL();
 [[nodiscard]] double largest_pipette_mL();
+[[nodiscard]] double largest_flask_mL();
 
 /// A row of uncertainty_terms.csv, in its unit. Asserts that there is one.
 [[nodiscard]] double uncertainty_term(std::string_view id);

@@ -42,19 +42,33 @@ analysis::AsWritten as_written(const Table& table, std::initializer_list<const c
 
 Titration read_titration(Table& entry) {
   Titration t;
+  const auto volume = [&](const char* key, const char* example) {
+    return entry.positive({key, optional, example}, units::read_volume).value_or(units::Litres{});
+  };
   t.where = entry.where("quantity");
   t.quantity = entry.text({"quantity", required, R"("Ni^2+")"});
   t.method = entry.text({"method", required, R"("edta-nickel")"});
   t.sample =
       entry.positive({"sample", required, R"("2.00 mL")"}, units::read_volume).value_or(units::Litres{});
-  t.titrant = entry.positive({"titrant", required, R"("0.1012 mol/L")"}, units::read_molarity)
+  t.diluted_to = volume("diluted_to", R"("500 mL")");
+  t.aliquot = volume("aliquot", R"("10.00 mL")");
+  t.weighed =
+      entry.positive({"weighed", optional, R"("0.4512 g")"}, units::read_mass).value_or(units::Kilograms{});
+  const Need titrated = entry.has("weighed") ? optional : required;  // what is weighed has no burette
+  t.titrant = entry.positive({"titrant", titrated, R"("0.1012 mol/L")"}, units::read_molarity)
                   .value_or(units::MolesPerLitre{});
   t.factor = entry.number({"factor", optional, "1.003"}, possible_factor).value_or(1);
   t.burette =
-      entry.quantity({"burette", required, R"("23.80 mL")"}, units::read_volume).value_or(units::Litres{});
+      entry.quantity({"burette", titrated, R"("23.80 mL")"}, units::read_volume).value_or(units::Litres{});
+  t.second_burette = volume("second_burette", R"("18.20 mL")");
+  t.excess = volume("excess", R"("50.00 mL")");
+  t.excess_strength = entry.positive({"excess_strength", optional, R"("0.0500 mol/L")"}, units::read_molarity)
+                          .value_or(units::MolesPerLitre{});
   const auto blank = entry.quantity({"blank", optional, R"("0.05 mL")"}, units::read_volume);
   t.blank = blank.value_or(units::Litres{});
-  t.written = as_written(entry, {"quantity", "method", "sample", "titrant", "factor", "burette", "blank"});
+  t.written =
+      as_written(entry, {"quantity", "method", "sample", "diluted_to", "aliquot", "titrant", "factor",
+                         "burette", "second_burette", "blank", "excess", "excess_strength", "weighed"});
   if (t.blank > t.burette) {
     entry.report("blank", "is more than the burette reading", "the titrant used without a sample",
                  "Are the two readings interchanged?");
@@ -68,6 +82,8 @@ Found read_found(Table& entry) {
   found.quantity = entry.text({"quantity", required, R"("Cl^-")"});
   found.value = entry.quantity({"value", required, R"("14.3 g/L")"}, units::read_concentration)
                     .value_or(units::Concentration{});
+  found.method = entry.text({"method", optional, R"("electrode-fluoride")"});
+  if (!found.method.empty()) found.method_where = entry.where("method");
   found.uncertainty = entry.quantity({"uncertainty", optional, R"("0.2 g/L")"}, units::read_concentration);
   return found;
 }

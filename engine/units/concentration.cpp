@@ -32,6 +32,7 @@ std::optional<MolesPerLitre> moles_per_litre_if_direct(const Concentration& c) {
   switch (c.unit) {
     case ConcentrationUnit::moles_per_litre:
     case ConcentrationUnit::millimoles_per_litre:
+    case ConcentrationUnit::points:
       return MolesPerLitre{c.value * direct_factor(c.unit)};
     case ConcentrationUnit::equivalents_per_litre:
       return MolesPerLitre{c.value / c.equivalents};

@@ -117,9 +117,9 @@ constexpr Unit concentrations[] = {
     {"N", "", 1},
     {"ppm w/w", "mg/kg", 0},
     {"ppm w/v", "", 1e-3},
+    {"points", "point", 0.01},
 };
-static_assert(std::size(concentrations) ==
-              static_cast<std::size_t>(ConcentrationUnit::ppm_mass_per_volume) + 1);
+static_assert(std::size(concentrations) == static_cast<std::size_t>(ConcentrationUnit::points) + 1);
 constexpr Trap concentration_traps[] = {
     {"oz/gal|floz/gal|lb/gal|troyoz/gal|oztr/gal|troz/gal", "Which gallon? Write \"US gal\" or \"imp gal\"."},
     {"%",

@@ -203,3 +203,58 @@ TEST_CASE("origins have names", "[unit]") {
   CHECK(analysis::name(Origin::book) == "book");
   CHECK(analysis::name(Origin::electroneutrality) == "electroneutrality");
 }
+
+TEST_CASE("what may have counted besides is told with the result", "[unit]") {
+  const auto a = evaluated(morning());
+  CHECK(level(a, "Ni^2+").interferences.starts_with("copper, zinc"));
+  CHECK(level(a, "SO4^2-").interferences.empty());
+}
+
+TEST_CASE("a level an instrument states has the repeatability of its method", "[unit]") {
+  auto readings = morning();
+  readings.titrations.erase(readings.titrations.begin());
+  readings.found = {found("Ni^2+", 70)};
+  readings.found[0].method = "photometric-nickel";
+  const auto a = evaluated(readings);
+  CHECK(level(a, "Ni^2+").standard_uncertainty.v == Approx(2.1).epsilon(1e-9));  // 3 %
+  CHECK(level(a, "Ni^2+").how == "70.00 g/L found by photometric-nickel");
+  CHECK(says(a.notes, "3 % taken (repeatability of the method)"));
+  readings.found[0].method = "electrode-fluoride";
+  CHECK(refusal(readings).what == "electrode-fluoride does not find Ni^2+");
+}
+
+TEST_CASE("free and total cyanide are not mixed up", "[failure]") {
+  bath::BathType type = bath_type();
+  type.name = "zinc cyanide";
+  type.convention = activity::Convention::association;
+  type.components = {{"H^+", bath::FoundBy::pH},
+                     {"Zn^2+", bath::FoundBy::analysis},
+                     {"CN^-", bath::FoundBy::analysis},
+                     {"Na^+", bath::FoundBy::charge}};
+  bath::Quantity free = quantity("NaCN", {{"CN^-", 1}, {"Zn^2+", -4}}, true);
+  free.id = "free NaCN";
+  type.quantities = {quantity("Zn^2+", {{"Zn^2+", 1}}), quantity("CN^-", {{"CN^-", 1}}), free,
+                     quantity("Na^+", {{"Na^+", 1}})};
+  const auto prepared = bath::Chemistry::prepare(type, {25}, {20});
+  INFO((prepared ? std::string() : text(prepared.problems())));
+  REQUIRE(prepared);
+  struct Row {
+    const char *quantity, *method, *what;
+  };
+  for (const Row& row :
+       {Row{"CN^-", "silver-free-cyanide", "silver-free-cyanide finds the free amount, CN^- is the total"},
+        Row{"free NaCN", "silver-total-cyanide",
+            "silver-total-cyanide finds the total amount, free NaCN is the free"}}) {
+    analysis::Readings readings;
+    readings.pH = 13;
+    readings.titrations = {titration(row.quantity, row.method, 10, 0.1, 12)};
+    const auto result = analysis::evaluate(readings, tank(), *prepared);
+    REQUIRE_FALSE(result);
+    CHECK(result.problems().front().what == row.what);
+    readings.titrations[0].method = readings.titrations[0].method == "silver-free-cyanide"
+                                        ? "silver-total-cyanide"
+                                        : "silver-free-cyanide";
+    const auto right = analysis::evaluate(readings, tank(), *prepared);
+    CHECK((right || right.problems().front().what.find("finds the") == std::string::npos));
+  }
+}

@@ -227,3 +227,45 @@ TEST_CASE("a formula too long is not cut in the middle of a dot", "[failure][mat
   CHECK(message(typed).find("\xc2\"") == std::string::npos);
   CHECK(message(typed).find("H\": the formula is longer") != std::string::npos);
 }
+
+TEST_CASE("mass ratios the trade works with", "[reference][matter]") {
+  // Computed elsewhere from abridged atomic weights, printed to four decimals.
+  const auto M = [](std::string_view formula) { return Formula::parse(formula)->molar_mass().v; };
+  struct Row {
+    const char *of, *per;
+    double ratio, of_per_mol;  // mol of the one per mol of the other
+  };
+  for (const Row& row :
+       {Row{"NaCN", "CuCN", 1.0944, 2}, Row{"KCN", "CuCN", 1.4541, 2}, Row{"NaCN", "Zn(CN)2", 0.8348, 2},
+        Row{"BaCO3", "SO4", 2.0544, 1}, Row{"H2SO4", "Al", 5.4521, 1.5}, Row{"H2SO4", "Fe", 1.7561, 1},
+        Row{"HCl", "Fe", 1.3057, 2}, Row{"FePO4", "Fe", 2.7006, 1}, Row{"NaH2PO2.H2O", "Ni", 1.8059, 1},
+        Row{"CrO3", "Cr", 1.9231, 1}, Row{"Na2CO3.10H2O", "Na2CO3", 2.6997, 1},
+        Row{"NiSO4.7H2O", "NiSO4.6H2O", 1.0685, 1}, Row{"CuSO4.5H2O", "Cu", 3.9291, 1}}) {
+    INFO(row.of << " per " << row.per);
+    CHECK(row.of_per_mol * M(row.of) / M(row.per) == Approx(row.ratio).margin(1.1e-4).epsilon(0));
+  }
+  // Make-up of a copper cyanide bath: free = added - 2 per Cu; of a pyrophosphate bath, P2O7 over Cu by mass.
+  CHECK(97.5 - 75 * 2 * M("NaCN") / M("CuCN") == Approx(15.4).margin(0.05).epsilon(0));
+  CHECK(102 - 60 * 2 * M("KCN") / M("CuCN") == Approx(14.8).margin(0.05).epsilon(0));
+  const double copper = 68 * 2 * M("Cu") / M("Cu2P2O7.3H2O");
+  const double pyrophosphate = M("P2O7") * (68 / M("Cu2P2O7.3H2O") + 275 / M("K4P2O7"));
+  CHECK(copper == Approx(24.3).margin(0.05).epsilon(0));
+  CHECK(pyrophosphate / copper == Approx(7.32).margin(0.005).epsilon(0));
+}
+
+TEST_CASE("grams deposited by an ampere-hour", "[reference][matter]") {
+  // Faraday's law, M * 3600 / (n F), F = 96485.33212 C/mol (exact, SI 2019); computed elsewhere.
+  struct Row {
+    const char* metal;
+    int electrons;
+    double g_per_Ah;
+  };
+  for (const Row& row :
+       {Row{"Ni", 2, 1.0950}, Row{"Cu", 2, 1.1855}, Row{"Cu", 1, 2.3710}, Row{"Zn", 2, 1.2197},
+        Row{"Cr", 6, 0.32334}, Row{"Cr", 3, 0.64668}, Row{"Sn", 2, 2.2146}, Row{"Ag", 1, 4.0247},
+        Row{"Au", 1, 7.3491}, Row{"Cd", 2, 2.0972}, Row{"Al", 3, 0.33558}}) {
+    INFO(row.metal << " " << row.electrons);
+    CHECK(Formula::parse(row.metal)->molar_mass().v * 3600 / (row.electrons * 96485.33212) ==
+          Approx(row.g_per_Ah).margin(5.5e-5).epsilon(0));
+  }
+}

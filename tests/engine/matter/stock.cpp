@@ -116,6 +116,13 @@ TEST_CASE("a kilogram of product holds its assay of substance", "[reference][mat
   CHECK(chemical("nickel-sulfate").water_kg_per_kg() == 0);
 }
 
+TEST_CASE("chloride of an acid copper bath from a spoon of acid", "[reference][matter]") {
+  // 10 mL of 37 % hydrochloric acid in 100 US gal: 11.3 mg/L (computed elsewhere; the published rule says 12)
+  const StockChemical& acid = chemical("hydrochloric-acid");
+  CHECK(acid.mol_per_kg() * acid.kg_per_L * 0.010 * 35.45 / 378.5412 * 1000 ==
+        Approx(11.3).margin(0.06).epsilon(0));
+}
+
 TEST_CASE("hexahydrate and heptahydrate cannot be confused", "[unit][matter]") {
   CHECK(chemical("nickel-sulfate").formula == "NiSO4.6H2O");
   CHECK(chemical("nickel-sulfate-heptahydrate").formula == "NiSO4.7H2O");

@@ -58,6 +58,28 @@ TEST_CASE("a concentration found elsewhere keeps the unit it was written in", "[
   CHECK(readings.volume->v == Approx(600 * 3.785411784).epsilon(1e-12));
 }
 
+TEST_CASE("dilution, back titration, two end points and a weighed precipitate are read",
+          "[unit][shopfiles]") {
+  const Readings readings = readings_of(
+      "[[titration]]\nquantity = \"H2PO2^-\"\nmethod = \"iodine-hypophosphite\"\nsample = \"5 mL\"\n"
+      "excess = \"50.00 mL\"\nexcess_strength = \"0.0500 mol/L\"\ntitrant = \"0.1 mol/L\"\nburette = \"20.5 mL\"\n"
+      "[[titration]]\nquantity = \"Cr^3+\"\nmethod = \"ferrous-chromium-iii\"\nsample = \"10 mL\"\n"
+      "diluted_to = \"500 mL\"\naliquot = \"10 mL\"\ntitrant = \"0.1 mol/L\"\nburette = \"15.9 mL\"\n"
+      "second_burette = \"15 mL\"\n"
+      "[[titration]]\nquantity = \"SO4^2-\"\nmethod = \"gravimetric-sulfate\"\nsample = \"10 mL\"\n"
+      "weighed = \"0.4512 g\"\n"
+      "[[found]]\nquantity = \"F^-\"\nvalue = \"40 g/L\"\nmethod = \"electrode-fluoride\"\n");
+  REQUIRE(readings.titrations.size() == 3);
+  CHECK(readings.titrations[0].excess.v == Approx(0.05).epsilon(1e-14));
+  CHECK(readings.titrations[0].excess_strength.v == 0.05);
+  CHECK(readings.titrations[1].diluted_to.v == Approx(0.5).epsilon(1e-14));
+  CHECK(readings.titrations[1].aliquot.v == Approx(0.01).epsilon(1e-14));
+  CHECK(readings.titrations[1].second_burette.v == Approx(0.015).epsilon(1e-14));
+  CHECK(readings.titrations[2].weighed.v == Approx(0.4512e-3).epsilon(1e-14));
+  CHECK(readings.found[0].method == "electrode-fluoride");
+  CHECK(readings.found[0].method_where == "r.toml:26: found.method");
+}
+
 TEST_CASE("the sampling time may stand in quotes, with or without seconds", "[unit][shopfiles]") {
   for (const char* written : {"2026-03-02T05:40:00", "\"2026-03-02T05:40:00\"", "\"2026-03-02 05:40\""}) {
     INFO(written);

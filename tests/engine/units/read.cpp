@@ -159,6 +159,7 @@ TEST_CASE("concentrations with a plain factor", "[reference][units]") {
   CHECK(grams_per_litre("1 lb/US gal") == Approx(119.826).margin(5e-4).epsilon(0));   // trade table
   CHECK(grams_per_litre("1 troy oz/US gal") == Approx(8.21667).margin(5e-6).epsilon(0));  // trade table
   CHECK(grams_per_litre("2 % w/v") == 20);
+  CHECK(moles_per_litre_if_direct(*read_concentration("6.2 points"))->v == Approx(0.062).epsilon(1e-14));
   CHECK(grams_per_litre("50 ppm w/v") == Approx(0.05).margin(1e-15).epsilon(0));
   CHECK(*millilitres_per_litre_if_direct(*read_concentration("6 fl oz/US gal")) ==
         Approx(46.875).margin(1e-9).epsilon(0));  // trade worked example

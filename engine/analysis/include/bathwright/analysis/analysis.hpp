@@ -18,7 +18,8 @@ struct LevelFound {
   units::GramsPerLitre value;                 ///< of a salt view it may be negative: there is a Suspect then
   units::GramsPerLitre standard_uncertainty;  ///< one sigma
   Origin from = Origin::titration;
-  std::string how;  ///< "23.80 mL of 0.1012 mol/L EDTA on 2.000 mL", for the sheet
+  std::string how;              ///< "23.80 mL of 0.1012 mol/L EDTA on 2.000 mL", for the sheet
+  std::string interferences{};  ///< what the method counts besides, or misses; empty where none is known
 };
 
 /// Something in the readings that does not fit.

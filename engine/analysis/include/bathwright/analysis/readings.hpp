@@ -30,17 +30,23 @@ struct AsWritten : std::map<std::string, Written, std::less<>> {
   }
 };
 
-/// One titration as it was read.
+/// One titration as it was read, or one precipitate as it was weighed. What the method does not use is 0.
 struct Titration {
   std::string quantity;          ///< "Ni^2+"
   std::string method;            ///< id of a titration method
-  units::Litres sample;          ///< bath in the flask
+  units::Litres sample;          ///< of the bath
   units::MolesPerLitre titrant;  ///< nominal strength
   double factor = 1;             ///< actual over nominal strength
   units::Litres burette;         ///< read at the end point
   units::Litres blank;           ///< used without sample
   std::string where;             ///< file:line, for messages
-  AsWritten written{};           ///< quantity, method, sample, titrant, factor, burette, blank
+  AsWritten written{};           ///< by the keys of the file
+  units::Litres diluted_to{},
+      aliquot{};                   ///< flask the sample was made up in, and how much of that was titrated
+  units::Litres second_burette{};  ///< the other end point of a difference
+  units::Litres excess{};          ///< back titration: reagent added
+  units::MolesPerLitre excess_strength{};  ///< of the reagent, actual
+  units::Kilograms weighed{};              ///< precipitate
 };
 
 /// A concentration found by other means.
@@ -49,6 +55,8 @@ struct Found {
   units::Concentration value;
   std::optional<units::Concentration> uncertainty;  ///< one standard uncertainty
   std::string where;
+  std::string method{};  ///< id of the method it was found by; empty if not given
+  std::string method_where{};
 };
 
 struct Readings {

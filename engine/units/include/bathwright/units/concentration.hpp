@@ -25,7 +25,8 @@ enum class ConcentrationUnit {
   moles_per_kilogram_of_water,
   equivalents_per_litre,  ///< N; needs `equivalents`
   ppm_by_mass,            ///< mg per kg of solution
-  ppm_mass_per_volume     ///< mg per litre of solution
+  ppm_mass_per_volume,    ///< mg per litre of solution
+  points                  ///< of acid: mL of 0.1 mol/L alkali per 10 mL of bath, 0.01 mol/L
 };
 
 struct Concentration {
