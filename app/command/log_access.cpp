@@ -3,6 +3,8 @@
 #include <cstdlib>
 #include <system_error>
 
+#include "user_folders.hpp"
+
 namespace bathwright::command {
 namespace {
 
@@ -16,12 +18,6 @@ const logbook::SystemClock& wall_clock() {
 std::string environment(const char* name) {
   const char* value = std::getenv(name);
   return value ? value : "";
-}
-
-fs::path data_folder() {
-  if (const std::string data = environment("XDG_DATA_HOME"); !data.empty())
-    return fs::path(data) / "bathwright";
-  return fs::path(environment("HOME")) / ".local" / "share" / "bathwright";
 }
 
 }  // namespace

@@ -1,13 +1,21 @@
-// bathwright plugins list | show ID: which bath types there are, and what one says about itself.
+// bathwright plugins list | show ID | allow FILE | forget WHICH: which bath types there are, what one says
+// about itself, and whether one that did not come with the program may run.
+#include <unistd.h>
+
+#include <bathwright/plugin_host/allow_list.hpp>
 #include <bathwright/sheets/cautions.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
+#include <cstdio>
+#include <iostream>
 
 #include "context.hpp"
 #include "shop.hpp"
 
 namespace bathwright::command {
 namespace {
+
+constexpr std::size_t shown_digits = 12;  ///< of a hash in the table; --json has all
 
 int list(const Context& context) {
   const auto types = known_bath_types(context);
@@ -19,25 +27,129 @@ int list(const Context& context) {
                                 {"version", listed.version},
                                 {"state", plugin_host::name(listed.state)},
                                 {"file", listed.path.string()},
+                                {"sha256", listed.sha256},
                                 {"reason", listed.problems.empty() ? "" : text(listed.problems)},
                                 {"notes", listed.notes}});
     print(doc);
     return Exit::all_well;
   }
   sheets::Lines lines;
-  sheets::Table table({{"bath type"}, {"version"}, {"state"}, {"file"}});
+  sheets::Table table({{"bath type"}, {"version"}, {"state"}, {"SHA-256"}, {"file"}});
   for (const auto& listed : types.list())
     table.add({listed.id, listed.version, std::string(plugin_host::name(listed.state)),
-               listed.path.filename().string()});
+               listed.sha256.substr(0, shown_digits), listed.path.filename().string()});
   if (table.empty())
     sheets::say(lines, "No bath type found. Name a folder with --plugins.");
   else
     sheets::append(lines, table.lines());
+  std::filesystem::path folder;
   for (const auto& listed : types.list())
+    if (const auto in = listed.path.parent_path(); in != folder)
+      sheets::say(lines, "In " + (folder = in).string(), 2);
+  for (const auto& listed : types.list()) {
     for (const Problem& problem : listed.problems) sheets::say(lines, problem.text(), 2);
+    for (const std::string& note : listed.notes)
+      sheets::say(lines, listed.path.filename().string() + ": " + note, 2);
+  }
   print(lines);
   return Exit::all_well;
 }
+
+// ---- allow, forget
+
+sheets::Lines page_of(const std::filesystem::path& file, const plugin_host::Examined& examined) {
+  sheets::Lines lines;
+  sheets::Table table({{"file"}, {file.string()}});
+  table.add({"SHA-256", examined.sha256});
+  for (const auto& type : examined.report.types) {
+    table.add({"bath type", type.id + " " + type.version + ", " + type.name});
+    table.add({"author", type.author});
+    table.add({"licence", type.licence});
+  }
+  sheets::append(lines, table.lines());
+  return lines;
+}
+
+/// Whether the person at the terminal types yes.
+bool says_yes() {
+  std::printf("Allow it? Type yes: ");
+  std::fflush(stdout);
+  std::string answer;
+  return std::getline(std::cin, answer) && answer == "yes";
+}
+
+int allow(const Context& context, const std::string& name, bool yes) {
+  const plugin_host::Places places = plugin_places(context);
+  const std::filesystem::path file = std::filesystem::absolute(name);
+  const auto examined = plugin_host::examine(file, places);
+  if (!examined) return fail(context, examined.problems());
+  if (!context.json) print(page_of(file, *examined));
+  if (Problems problems = examined->report.problems(); !problems.empty()) return fail(context, problems);
+  if (!examined->built_in) {
+    if (!context.json) {
+      sheets::Lines lines;
+      sheets::say(
+          lines,
+          "A bath type is a program. Allowed, it runs whenever you start Bathwright, with your own rights: it "
+          "can read and write what you can. Its hash shows that it is the same file tomorrow, not that it is "
+          "good. Allow it only if you would let its author work on your computer.");
+      print(lines);
+    }
+    if (!yes && (context.json || ::isatty(STDIN_FILENO) == 0))
+      return fail(context,
+                  {{Fault::refused, file.string(), "nobody is here to say yes", "a terminal, or --yes", ""}});
+    if (!yes && !says_yes())
+      return fail(context, {{Fault::refused, file.string(), "is not allowed", "", ""}});
+    const auto list_file = plugin_host::allow_list_file(places.data);
+    auto list = plugin_host::AllowList::read(list_file);
+    if (!list) return fail(context, list.problems());
+    plugin_host::AllowList longer = *std::move(list);
+    const auto& type = examined->report.types.front();
+    longer.add({examined->sha256, file.string(), type.id, type.author, type.licence});
+    if (Outcome written = longer.write(list_file); !written) return fail(context, written.problems());
+  }
+  plugin_host::release_from_quarantine(examined->sha256, places);
+  if (context.json) {
+    Json doc = document({});
+    doc["allowed"] = {
+        {"file", file.string()}, {"sha256", examined->sha256}, {"built_in", examined->built_in}};
+    print(doc);
+  } else {
+    print(sheets::Lines{examined->built_in ? "It was built with this program and is allowed." : "Allowed."});
+  }
+  return Exit::all_well;
+}
+
+int forget(const Context& context, const std::string& which) {
+  const plugin_host::Places places = plugin_places(context);
+  const auto list_file = plugin_host::allow_list_file(places.data);
+  const auto list = plugin_host::AllowList::read(list_file);
+  if (!list) return fail(context, list.problems());
+  plugin_host::AllowList shorter = *list;
+  const std::string path = std::filesystem::absolute(which).string();
+  Json forgotten = Json::array();
+  for (const plugin_host::Allowed& allowed : list->all()) {
+    if (allowed.sha256 != which && allowed.id != which && allowed.file != path) continue;
+    shorter.remove(allowed.sha256);
+    forgotten.push_back({{"id", allowed.id}, {"file", allowed.file}, {"sha256", allowed.sha256}});
+  }
+  if (forgotten.empty())
+    return fail(context, {{Fault::bad_input, which, "is no plugin you allowed",
+                           "the file, id or SHA-256 of one", list_file.string() + " lists them."}});
+  if (Outcome written = shorter.write(list_file); !written) return fail(context, written.problems());
+  if (context.json) {
+    Json doc = document({});
+    doc["forgotten"] = forgotten;
+    print(doc);
+  } else {
+    for (const Json& one : forgotten)
+      print(sheets::Lines{"No longer allowed: " + one["id"].get<std::string>() + ", " +
+                          one["file"].get<std::string>()});
+  }
+  return Exit::all_well;
+}
+
+// ---- show
 
 std::string window_text(const bath::Window& w) {
   const auto end = [](double limit) { return sheets::figure(limit); };
@@ -140,6 +252,20 @@ void add_plugins(CLI::App& program, Context& context, Action& action) {
   auto id = std::make_shared<std::string>();
   show_verb->add_option("ID", *id, "as in the list")->required();
   show_verb->callback([&context, &action, id] { action = [&context, id] { return show(context, *id); }; });
+  auto* allow_verb =
+      verb->add_subcommand("allow", "let a bath type run that did not come with the program")->fallthrough();
+  auto file = std::make_shared<std::string>();
+  auto yes = std::make_shared<bool>(false);
+  allow_verb->add_option("FILE", *file, "the plugin, .bathtype.so")->required();
+  allow_verb->add_flag("--yes", *yes, "do not ask");
+  allow_verb->callback([&context, &action, file, yes] {
+    action = [&context, file, yes] { return allow(context, *file, *yes); };
+  });
+  auto* forget_verb = verb->add_subcommand("forget", "let it run no more")->fallthrough();
+  auto which = std::make_shared<std::string>();
+  forget_verb->add_option("WHICH", *which, "its file, id or SHA-256")->required();
+  forget_verb->callback(
+      [&context, &action, which] { action = [&context, which] { return forget(context, *which); }; });
 }
 
 }  // namespace bathwright::command

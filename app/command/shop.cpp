@@ -2,9 +2,10 @@
 
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/described/bath_type_file.hpp>
-#include <bathwright/plugin_host/discovery.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
+
+#include "user_folders.hpp"
 
 namespace bathwright::command {
 namespace {
@@ -47,10 +48,20 @@ Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
 
 }  // namespace
 
+plugin_host::Places plugin_places(const Context& context) {
+  plugin_host::Places places = plugin_host::built_in_places();
+  places.folders.push_back({data_folder() / "plugins", plugin_host::Origin::user});
+  for (const std::string& folder : context.plugin_folders)
+    places.folders.push_back({folder, plugin_host::Origin::named});
+  places.data = data_folder();
+  places.state = state_folder();
+  places.cache = cache_folder() / "probes";
+  places.read_data_file = described::read_bath_type_file;
+  return places;
+}
+
 plugin_host::BathTypes known_bath_types(const Context& context) {
-  std::vector<std::filesystem::path> folders = plugin_host::built_in_folders();
-  folders.insert(folders.end(), context.plugin_folders.begin(), context.plugin_folders.end());
-  return plugin_host::BathTypes::discover(folders, described::read_bath_type_file);
+  return plugin_host::BathTypes::discover(plugin_places(context));
 }
 
 Result<Shop> open_shop(const Context& context, const std::string& tank_path) {

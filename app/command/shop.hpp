@@ -9,7 +9,10 @@
 
 namespace bathwright::command {
 
-/// The program's own plugin folders, then those named with --plugins.
+/// The program's own plugin folders, the user's, then those named with --plugins; the user's data and cache.
+[[nodiscard]] plugin_host::Places plugin_places(const Context& context);
+
+/// What those places have.
 [[nodiscard]] plugin_host::BathTypes known_bath_types(const Context& context);
 
 struct Shop {

@@ -186,7 +186,8 @@ TEST_CASE("tank, sources and plugins answer in JSON too", "[unit][command]") {
              {"headroom/[]/forms_above_pH_standard_uncertainty", "number?"}});
   check_all(bench.run("sources HSO4^- --json"),
             {{"constants/[]/source", "text"}, {"constants/[]/values", "text"}});
-  check_all(bench.run("plugins list --json"), {{"plugins/[]/id", "text"}, {"plugins/[]/state", "text"}});
+  check_all(bench.run("plugins list --json"),
+            {{"plugins/[]/id", "text"}, {"plugins/[]/state", "text"}, {"plugins/[]/sha256", "text"}});
   check_all(bench.run("plugins show watts-nickel --json"),
             {{"windows/[]/source", "text"}, {"sources", "list"}});
 }

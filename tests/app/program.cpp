@@ -34,7 +34,9 @@ Bench::~Bench() { fs::remove_all(folder_); }
 Run Bench::run(const std::string& arguments) const {
   const std::string out = (folder_ / "out").string(), err = (folder_ / "err").string();
   const std::string command = "cd '" + (folder_ / "work").string() + "' && XDG_DATA_HOME='" +
-                              (folder_ / "work/data").string() + "' USER=tester '" PROGRAM "' " + arguments +
+                              (folder_ / "work/data").string() + "' XDG_STATE_HOME='" +
+                              (folder_ / "state").string() +
+                              "' XDG_CACHE_HOME='" TEST_CACHE "' USER=tester '" PROGRAM "' " + arguments +
                               " >'" + out + "' 2>'" + err + "'";
   const int status = std::system(command.c_str());
   return {WIFEXITED(status) ? WEXITSTATUS(status) : -1, content_of(out), content_of(err)};

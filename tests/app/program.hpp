@@ -16,6 +16,7 @@ struct Run {
 };
 
 /// A scratch folder that is gone at the end of its test; the program runs in it, with its data folder inside.
+/// What is known of the bath types from probing them is kept between the tests.
 class Bench {
  public:
   Bench();

@@ -47,8 +47,9 @@ TEST_CASE("the slip tells its doubts in few words, defers once, and shows what w
 }
 
 TEST_CASE("the help of every verb ends with the options all of them take", "[unit][command]") {
-  const std::string verb = GENERATE("analyse", "dose", "tank", "path", "log", "log add", "log list",
-                                    "solution", "sources", "plugins", "plugins show");
+  const std::string verb =
+      GENERATE("analyse", "dose", "tank", "path", "log", "log add", "log list", "solution", "sources",
+               "plugins", "plugins show", "plugins allow", "plugins forget");
   const auto run = Bench().run(verb + " --help");
   CHECK_THAT(run.out, Catch::Contains("Every verb takes:") && Catch::Contains("--log") &&
                           Catch::Contains("--json") && Catch::Contains("--plugins"));

@@ -3,9 +3,10 @@
 
 #include <bathwright/bath/chemistry.hpp>
 #include <bathwright/matter/stock.hpp>
-#include <bathwright/plugin_host/loader.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 #include <catch2/catch.hpp>
+
+#include "built_in_types.hpp"
 
 namespace demo {
 
@@ -25,8 +26,9 @@ inline const bath::Tank& tank() {
 }
 
 inline const bath::BathType& watts() {
-  static const bath::BathType type = must(plugin_host::load(WATTS_PLUGIN)).types.front();
-  return type;
+  const bath::BathType* type = built_in_types().find("watts-nickel");
+  REQUIRE(type);
+  return *type;
 }
 
 inline const bath::Chemistry& chemistry() {

@@ -2,18 +2,17 @@
 #include <algorithm>
 #include <bathwright/bath/chemistry.hpp>
 #include <bathwright/described/bath_type_file.hpp>
-#include <bathwright/plugin_host/discovery.hpp>
-#include <bathwright/plugin_host/registry.hpp>
 #include <bit>
 #include <catch2/catch.hpp>
+
+#include "../../support/built_in_types.hpp"
 
 using namespace bathwright;
 
 namespace {
 
 const bath::BathType& compiled() {
-  static const auto types = plugin_host::BathTypes::discover(plugin_host::built_in_folders());
-  const bath::BathType* found = types.find("watts-nickel");
+  const bath::BathType* found = built_in_types().find("watts-nickel");
   REQUIRE(found);
   return *found;
 }

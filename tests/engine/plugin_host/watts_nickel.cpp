@@ -1,9 +1,9 @@
 // The shipped bath type, found beside the test program and loaded as a user's run of the program would.
 #include <algorithm>
 #include <bathwright/matter/stock.hpp>
-#include <bathwright/plugin_host/discovery.hpp>
-#include <bathwright/plugin_host/registry.hpp>
 #include <catch2/catch.hpp>
+
+#include "../../support/built_in_types.hpp"
 
 using namespace bathwright;
 using namespace bathwright::plugin_host;
@@ -11,7 +11,7 @@ using namespace bathwright::plugin_host;
 namespace {
 
 const bath::BathType& watts_nickel() {
-  static const BathTypes types = BathTypes::discover(built_in_folders());
+  const BathTypes& types = built_in_types();
   for (const Listed& listed : types.list()) {
     INFO(text(listed.problems));
     CHECK(listed.state == State::ready);
