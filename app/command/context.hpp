@@ -50,6 +50,7 @@ using Action = std::function<int()>;
 void add_analyse(CLI::App& program, Context& context, Action& action);
 void add_dose(CLI::App& program, Context& context, Action& action);
 void add_fit(CLI::App& program, Context& context, Action& action);
+void add_forecast(CLI::App& program, Context& context, Action& action);
 void add_log(CLI::App& program, Context& context, Action& action);
 void add_path(CLI::App& program, Context& context, Action& action);
 void add_plugins(CLI::App& program, Context& context, Action& action);

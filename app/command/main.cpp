@@ -55,6 +55,7 @@ int main(int argc, char** argv) {
   add_dose(program, context, action);
   add_tank(program, context, action);
   add_path(program, context, action);
+  add_forecast(program, context, action);
   add_log(program, context, action);
   add_solution(program, context, action);
   add_fit(program, context, action);

@@ -133,12 +133,9 @@ Result<Bands> Forecast::sample(const bath::TankState& start, const Sampling& sam
       days.push_back(day.value_or(HUGE_VAL));
       met += day.has_value();
     }
-    LimitMet row{
-        limit.name, limit.cause, {}, {}, {}, {}, static_cast<double>(met) / static_cast<double>(count)};
-    row.day_p05 = finite(percentile(days, 0.05));
-    row.day_p50 = row.day = finite(percentile(days, 0.50));
-    row.day_p95 = finite(percentile(days, 0.95));
-    bands.limits.push_back(std::move(row));
+    bands.limits.push_back(as_met(*prepared_, limit, finite(percentile(days, 0.05)),
+                                  finite(percentile(days, 0.50)), finite(percentile(days, 0.95)),
+                                  static_cast<double>(met) / static_cast<double>(count)));
   }
   return bands;
 }

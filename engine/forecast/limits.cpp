@@ -21,6 +21,8 @@ std::vector<Limit> limits_of(const Prepared& p) {
     const bath::Aim* aim = p.tank.aim(quantity.id);
     const auto window = std::ranges::find(type.windows, quantity.id, &bath::Window::subject);
     const auto own = std::ranges::find(p.policy.limits, quantity.id, &OwnLimit::quantity);
+    const bool put_back = std::ranges::any_of(
+        p.policy.replenishment, [&](const Replenishment& r) { return r.quantity == quantity.id; });
     double low = bath::not_given, high = bath::not_given;
     if (aim)
       low = aim->low, high = aim->high;
@@ -30,7 +32,7 @@ std::vector<Limit> limits_of(const Prepared& p) {
     const auto add = [&](double value, bool above) {
       if (std::isnan(value)) return;
       limits.push_back({quantity.label + (above ? " above " : " below ") + significant(value) + " g/L",
-                        aim ? Cause::window : Cause::by_product, q, value, above, false});
+                        put_back ? Cause::window : Cause::by_product, q, value, above, false});
     };
     add(low, false);
     add(high, true);
@@ -66,11 +68,17 @@ std::optional<double> day_met(const Limit& limit, const std::vector<Day>& days) 
   return std::nullopt;
 }
 
+LimitMet as_met(const Prepared& p, const Limit& limit, std::optional<double> p05, std::optional<double> p50,
+                std::optional<double> p95, double share) {
+  const std::string quantity = limit.is_solid ? "" : p.chemistry.type().quantities[limit.index].id;
+  return {limit.name, limit.cause, quantity, limit.value, limit.above, p50, p05, p50, p95, share};
+}
+
 std::vector<LimitMet> Forecast::limits(const Run& run) const {
   std::vector<LimitMet> met;
   for (const Limit& limit : limits_of(*prepared_)) {
     const auto day = day_met(limit, run.days);
-    met.push_back({limit.name, limit.cause, day, day, day, day, day ? 1.0 : 0.0});
+    met.push_back(as_met(*prepared_, limit, day, day, day, day ? 1.0 : 0.0));
   }
   return met;
 }

@@ -20,6 +20,9 @@ std::vector<Limit> limits_of(const Prepared& prepared);
 
 double value_of(const Limit& limit, const Day& day);
 
+LimitMet as_met(const Prepared& prepared, const Limit& limit, std::optional<double> p05,
+                std::optional<double> p50, std::optional<double> p95, double share);
+
 /// By linear interpolation between days; nothing where it is not met.
 std::optional<double> day_met(const Limit& limit, const std::vector<Day>& days);
 

@@ -337,22 +337,23 @@ Result<std::optional<double>> Forecast::bleed_to_hold(const TankState& start, co
   const auto without = settles_at(0);
   if (!without) return without.problems();
   if (*without <= g_per_L) return std::optional<double>{};
-  double low = 0, high = 0.01 * p.tank.working_volume.v;
-  for (int doubling = 0; doubling < 20; ++doubling) {
+  // What settles is near p/(D + B): its inverse is nearly a straight line in the bleed B, and secants on it
+  // are there in a few runs.
+  double low = 0, low_inverse = 1 / *without;
+  double high = 0.01 * p.tank.working_volume.v, wanted = 1 / g_per_L;
+  constexpr int most_runs = 30;
+  for (int run = 0; run < most_runs; ++run) {
     const auto level = settles_at(high);
     if (!level) return level.problems();
-    if (*level <= g_per_L) break;
-    low = high;
-    high *= 2;
+    const double high_inverse = 1 / *level;
+    if (std::abs(high_inverse - wanted) < 1e-8 * wanted) return std::optional(high);
+    const double slope = (high_inverse - low_inverse) / (high - low);
+    const double next = slope > 0 ? std::max(high + (wanted - high_inverse) / slope, high / 4) : 2 * high;
+    low = high, low_inverse = high_inverse;
+    high = std::min(next, 16 * high);
   }
-  // The level falls steadily with the bleed, near 1/bleed: bisection on it settles in a few dozen runs.
-  while (high - low > 1e-7 * high) {
-    const double middle = (low + high) / 2;
-    const auto level = settles_at(middle);
-    if (!level) return level.problems();
-    (*level > g_per_L ? low : high) = middle;
-  }
-  return std::optional((low + high) / 2);
+  return Problem{Fault::not_converged, quantity, "no bleed was found that holds it", "",
+                 "Check the policy: something else may hold or drive this level."};
 }
 
 }  // namespace bathwright::forecast

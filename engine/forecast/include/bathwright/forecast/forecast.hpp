@@ -48,6 +48,9 @@ enum class Cause : std::uint8_t { window, by_product, solid_at_work, solid_at_re
 struct LimitMet {
   std::string name;  ///< "orthophosphite above 120 g/L", "Na2CO3.10H2O at 15 degC"
   Cause cause = Cause::window;
+  std::string quantity;    ///< id; empty: a solid
+  double g_per_L = 0;      ///< of a quantity
+  bool from_below = true;  ///< met as the level rises
   /// Day it is met, by linear interpolation; of the run itself, or percentiles of the samples. Nothing: not
   /// within the horizon ("never" is said where it also settles below it).
   std::optional<double> day, day_p05, day_p50, day_p95;
