@@ -2,11 +2,12 @@
 #include <bathwright/conformance/conformance.hpp>
 #include <fstream>
 #include <iterator>
+#include <span>
 
+#include "binary.hpp"
 #include "docs_page.hpp"
 #include "examples_file.hpp"
 #include "replay.hpp"
-#include "shared_object.hpp"
 
 namespace bathwright::conformance {
 namespace {
@@ -49,10 +50,23 @@ std::vector<Check> examples(const bath::BathType& type, const fs::path& file, St
   return replay(type, *read);
 }
 
+std::string content_of(const fs::path& file) {
+  std::ifstream in(file, std::ios::binary);
+  return {std::istreambuf_iterator<char>(in), {}};
+}
+
+/// "entry: past the end it gives BW_END" in its group; what is of the process as a whole goes with the
+/// functions.
+Check from_probe(const plugin_host::Check& probed) {
+  for (const Group group : {Group::file, Group::tables, Group::entry, Group::functions})
+    if (const std::string head = std::string(name(group)) + ": "; probed.name.starts_with(head))
+      return {group, probed.name.substr(head.size()), "", probed.problems};
+  return {Group::functions, probed.name, "", probed.problems};
+}
+
 std::vector<Check> docs(const bath::BathType& type, const fs::path& file, Strictness strictness) {
   if (!fs::exists(file)) return {missing(Group::docs, file, strictness)};
-  std::ifstream in(file);
-  return check_page(type, file.string(), {std::istreambuf_iterator<char>(in), {}});
+  return check_page(type, file.string(), content_of(file));
 }
 
 }  // namespace
@@ -64,10 +78,15 @@ std::string_view name(Group group) {
 
 fs::path papers_of(const fs::path& file, const std::string& id) { return file.parent_path() / id; }
 
-std::vector<Check> check_binary(const fs::path& file) {
-  const auto object = read_shared_object(file);
-  if (!object) return {{Group::file, "is a library that can be loaded", "", object.problems()}};
-  return check_shared_object(*object, file.filename().string());
+std::vector<Check> check_code(const fs::path& file, const plugin_host::ProbeReport& probed) {
+  std::vector<Check> checks;
+  std::ranges::transform(probed.checks, std::back_inserter(checks), from_probe);
+  const std::string content = content_of(file);
+  const auto object = plugin_host::read_shared_object(std::as_bytes(std::span(content)));
+  // What is no library has failed in the probe.
+  if (object) append(checks, check_shared_object(*object, file.filename().string()));
+  std::ranges::stable_sort(checks, {}, &Check::group);
+  return checks;
 }
 
 std::vector<Check> check_papers(const bath::BathType& type, const fs::path& file, Strictness strictness) {

@@ -2,9 +2,9 @@
 #include <sys/stat.h>
 
 #include <bathwright/plugin_host/probe_program.hpp>
+#include <bathwright/plugin_host/shared_object.hpp>
 #include <cerrno>
 
-#include "elf_exports.hpp"
 #include "exercise.hpp"
 #include "probe_limits.hpp"
 #include "probe_pipe.hpp"
@@ -40,14 +40,14 @@ std::span<const std::byte> mapped(int memory) {
 
 Check check_exports(int memory, const std::string& name) {
   Check made{"file: exports bw_entry_1 and nothing else", {}};
-  auto exported = exported_symbols(mapped(memory));
-  if (!exported) {
-    made.problems = exported.problems();
+  const auto object = read_shared_object(mapped(memory));
+  if (!object) {
+    made.problems = object.problems();
     for (Problem& problem : made.problems) problem.where = name;
     return made;
   }
   std::string others;
-  for (const std::string& symbol : *exported)
+  for (const std::string& symbol : object->exported)
     if (!symbol.starts_with("bw_entry_")) others += (others.empty() ? "" : ", ") + symbol;
   if (!others.empty())
     made.problems.push_back({Fault::inconsistent_data, name, "exports " + others,

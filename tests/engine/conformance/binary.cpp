@@ -1,19 +1,31 @@
 // What a plugin's file says of itself, read without running it.
-#include <bathwright/conformance/conformance.hpp>
-#include <catch2/catch.hpp>
-#include <filesystem>
-#include <fstream>
+#include "binary.hpp"
 
-#include "shared_object.hpp"
+#include <catch2/catch.hpp>
+#include <fstream>
+#include <iterator>
 
 using namespace bathwright;
 using conformance::Check;
+using plugin_host::read_shared_object;
 
 namespace {
 
+std::string content_of(const std::string& plugin) {
+  std::ifstream in(TEST_PLUGINS "/check-" + plugin + ".bathtype.so", std::ios::binary);
+  return {std::istreambuf_iterator<char>(in), {}};
+}
+
+Result<plugin_host::SharedObject> read(const std::string& content) {
+  return read_shared_object(std::as_bytes(std::span(content)));
+}
+
 std::string faults_of(const std::string& plugin) {
+  const auto object = read(content_of(plugin));
+  REQUIRE(object);
+  CHECK(object->exported == std::vector<std::string>{"bw_entry_1"});
   std::string faults;
-  for (const Check& check : conformance::check_binary(TEST_PLUGINS "/check-" + plugin + ".bathtype.so")) {
+  for (const Check& check : conformance::check_shared_object(*object, plugin)) {
     CHECK(check.group == conformance::Group::file);
     for (const Problem& problem : check.problems) faults += check.what + ": " + problem.what + '\n';
   }
@@ -24,11 +36,9 @@ std::string faults_of(const std::string& plugin) {
 
 TEST_CASE("a bath type as it is built has a file without fault", "[unit][conformance]") {
   CHECK(faults_of("as-built").empty());
-  CHECK(conformance::check_binary(TEST_PLUGINS "/check-as-built.bathtype.so").size() == 4);
 }
 
 TEST_CASE("each fault of a plugin's file is named", "[failure][conformance]") {
-  CHECK(faults_of("exports-more") == "exports bw_entry_1 and nothing else: exports helper\n");
   CHECK(faults_of("bound-late") == "is bound at once: looks functions up when they are first called\n");
   const std::string reaching = faults_of("prints-and-starts-threads");
   for (const char* what : {"uses puts, which prints", "uses thrd_create, which starts a thread",
@@ -39,26 +49,27 @@ TEST_CASE("each fault of a plugin's file is named", "[failure][conformance]") {
 }
 
 TEST_CASE("text relocations are a fault", "[failure][conformance]") {
-  // No compiler of this machine makes them any more; so the loader's word for it is tested alone.
-  conformance::SharedObject object{{"bw_entry_1"}, {}, true, true};
+  // Made by hand: the linker of this machine refuses to write them.
+  const plugin_host::SharedObject object{{"bw_entry_1"}, {}, true, true};
   const auto checks = conformance::check_shared_object(object, "old.bathtype.so");
-  CHECK(checks[1].failed());
-  object.text_relocations = false;
-  CHECK(conformance::check_shared_object(object, "old.bathtype.so")[1].passed());
+  REQUIRE(checks.front().failed());
+  CHECK(checks.front().problems.front().what == "has text relocations");
 }
 
-TEST_CASE("what is no library, and what is cut off, is refused", "[failure][conformance]") {
-  const std::filesystem::path folder = std::filesystem::temp_directory_path();
-  const auto whole = [] {
-    std::ifstream in(TEST_PLUGINS "/check-as-built.bathtype.so", std::ios::binary);
-    return std::string{std::istreambuf_iterator<char>(in), {}};
-  }();
-  CHECK_FALSE(conformance::read_shared_object(folder / "not-there.bathtype.so"));
-  const auto file = folder / "bathwright-cut-off.bathtype.so";
-  for (std::size_t length = 0; length < whole.size(); length += 997) {
-    std::ofstream(file, std::ios::binary) << whole.substr(0, length);
-    const auto read = conformance::read_shared_object(file);  // a refusal or a part of it, never a crash
-    CHECK((!read || read->exported.size() <= 1));
+TEST_CASE("what is no library, cut off or damaged is refused or read, and never a crash",
+          "[failure][conformance]") {
+  const std::string whole = content_of("as-built");
+  CHECK_FALSE(read(""));
+  CHECK_FALSE(read("nickel"));
+  for (std::size_t length = 0; length < whole.size(); length += 97)
+    if (const auto object = read(whole.substr(0, length))) CHECK(object->exported.size() <= 1);
+  std::string damaged = whole;
+  unsigned seed = 1;
+  for (int round = 0; round < 5000; ++round) {
+    seed = seed * 1664525u + 1013904223u;  // Numerical Recipes' generator; any would do
+    const std::size_t place = seed % whole.size();
+    damaged[place] = static_cast<char>(seed >> 24);
+    (void)read(damaged);
+    if (round % 8 == 7) damaged = whole;
   }
-  std::filesystem::remove(file);
 }

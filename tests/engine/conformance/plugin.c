@@ -1,11 +1,6 @@
 /* A plugin whose file is read and never run. */
 #include <bathwright_plugin.h>
 
-#ifdef FORM_exports_more
-BW_EXPORT int helper;
-int helper = 1;
-#endif
-
 #ifdef FORM_prints_and_starts_threads
 #include <stdio.h>
 #include <stdlib.h>

@@ -5,6 +5,7 @@
 
 #include <bathwright/bath/bath_type.hpp>
 #include <bathwright/conformance/check.hpp>
+#include <bathwright/plugin_host/probe_report.hpp>
 #include <filesystem>
 
 namespace bathwright::conformance {
@@ -12,8 +13,10 @@ namespace bathwright::conformance {
 /// The folder with README.md and examples.toml of a bath type: named as its id, beside its file.
 [[nodiscard]] std::filesystem::path papers_of(const std::filesystem::path& file, const std::string& id);
 
-/// Group file, for a compiled bath type; nothing of it is run.
-[[nodiscard]] std::vector<Check> check_binary(const std::filesystem::path& file);
+/// Groups file, tables, entry and functions of a compiled bath type: what its probe found, and what its file
+/// says of itself.
+[[nodiscard]] std::vector<Check> check_code(const std::filesystem::path& file,
+                                            const plugin_host::ProbeReport& probed);
 
 /// Groups tables (what only a release must hold), examples (replayed) and docs of a bath type whose tables
 /// were read from `file`. Papers that are not there are a failure of a release and skipped otherwise.
