@@ -18,6 +18,14 @@
  *   [load] once, on one thread, before any other call.
  *   [calc] later, on any thread, several at once: pure. No globals written, no input or output, same input ->
  *          same bits, back within 2 ms.
+ *   found    nothing is called: the file is read, hashed, looked up among those that may run
+ *   probed   in a process of its own: all of the below, with odd states of the bath too
+ *   loading  bw_entry_1 with 0, 1, 2 ... until BW_END; the tables are checked and copied
+ *   ready    eval and rate, in any order, until the process ends or three faults have parked the bath type
+ *
+ * Whatever a function is handed is the host's and valid during that call alone; it writes the numbers it is
+ * asked for and nothing else. What no comment says otherwise of holds for each field: text and tables by R3
+ * and R5, numbers by R4 and finite, codes and flags by R2.
  *
  * A library that is a plugin is named <id>.bathtype.so and exports bw_entry_1 and nothing else. */
 #ifndef BATHWRIGHT_PLUGIN_H
@@ -206,7 +214,9 @@ typedef struct bw_view {
   uint32_t quantity_count; /* rows of the plugin's own table of quantities */
   uint32_t species_count;
   uint32_t reserved;
-  double temp_C, volume_L, pH, ionic_strength_mol_per_kg;
+  double temp_C, volume_L; /* of the solution */
+  double pH;               /* -log10 of the activity of H^+ */
+  double ionic_strength_mol_per_kg;
   const double* quantity_g_per_L;    /* in the order of `quantities`; NaN = not known */
   const char* const* species;        /* names of the solved species */
   const double* molality_mol_per_kg; /* of each species */
@@ -229,7 +239,8 @@ typedef struct bw_indicator {
   const char* label;                                     /* [req] "chloride to nickel" */
   const char* meaning;                                   /* [req][long] why an operator looks at it */
   const char* unit;                                      /* "g/g"; NULL: a pure number */
-  bw_status (*eval)(const bw_view* view, double* value); /* [calc][req] finite *value with BW_OK */
+  bw_status (*eval)(const bw_view* view, double* value); /* [calc][req] one finite number with BW_OK, in
+                                                          * `unit`; any other status leaves it unread */
 } bw_indicator;
 
 /* What one unit of work does to the bath, drag-out apart. The host computes the metal per ampere-hour from
@@ -257,10 +268,13 @@ typedef struct bw_use {
 /* [load] What the host offers. Valid only during the call of bw_entry_1 that it was passed to. */
 typedef struct bw_host {
   uint32_t size, abi_minor;
-  void* ctx;                                                                     /* hand back unchanged */
-  const char *name, *version;                                                    /* of the host program */
-  void (*note)(void* ctx, int32_t level, const char* subject, const char* text); /* text is copied at once */
-  double (*formula_g_per_mol)(void* ctx, const char* formula);                   /* NaN: not readable */
+  void* ctx;                  /* hand back unchanged */
+  const char *name, *version; /* of the host program */
+  /* For the user: level BW_NOTICE ..., subject NULL, "" or what it is about; text [req][long] is copied at
+   * once. */
+  void (*note)(void* ctx, int32_t level, const char* subject, const char* text);
+  /* Molar mass of a formula, g/mol; NaN where it cannot be read. */
+  double (*formula_g_per_mol)(void* ctx, const char* formula);
 } bw_host;
 
 typedef struct bw_bath_type {
