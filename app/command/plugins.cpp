@@ -10,6 +10,7 @@
 #include <iostream>
 
 #include "context.hpp"
+#include "plugins_check.hpp"
 #include "shop.hpp"
 
 namespace bathwright::command {
@@ -252,6 +253,7 @@ void add_plugins(CLI::App& program, Context& context, Action& action) {
   auto id = std::make_shared<std::string>();
   show_verb->add_option("ID", *id, "as in the list")->required();
   show_verb->callback([&context, &action, id] { action = [&context, id] { return show(context, *id); }; });
+  add_plugins_check(*verb, context, action);
   auto* allow_verb =
       verb->add_subcommand("allow", "let a bath type run that did not come with the program")->fallthrough();
   auto file = std::make_shared<std::string>();

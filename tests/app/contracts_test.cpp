@@ -188,6 +188,14 @@ TEST_CASE("tank, sources and plugins answer in JSON too", "[unit][command]") {
             {{"constants/[]/source", "text"}, {"constants/[]/values", "text"}});
   check_all(bench.run("plugins list --json"),
             {{"plugins/[]/id", "text"}, {"plugins/[]/state", "text"}, {"plugins/[]/sha256", "text"}});
+  check_all(bench.run("plugins check watts-nickel --json"), {{"files/[]/file", "text"},
+                                                             {"files/[]/checks/[]/group", "text"},
+                                                             {"files/[]/checks/[]/check", "text"},
+                                                             {"files/[]/checks/[]/outcome", "text"},
+                                                             {"files/[]/checks/[]/found", "text"},
+                                                             {"files/[]/checks/[]/reason", "text"},
+                                                             {"passed", "number"},
+                                                             {"failed", "number"}});
   check_all(bench.run("plugins show watts-nickel --json"),
             {{"windows/[]/source", "text"}, {"sources", "list"}});
 }

@@ -36,7 +36,8 @@ TEST_CASE("a run ends with the status it promises", "[unit][command]") {
   const Case c =
       GENERATE(Case{"", 0}, Case{"--help", 0}, Case{"--version", 0}, Case{"dose --help", 0},
                Case{"plugins list", 0}, Case{"sources Ni^2+", 0}, Case{"sources Nj^2+", 2},
-               Case{"plugins show no-such", 2}, Case{"no-such-verb", 2}, Case{"solution", 2},
+               Case{"plugins show no-such", 2}, Case{"plugins check", 2}, Case{"plugins check no-such", 2},
+               Case{"plugins check watts-nickel", 0}, Case{"no-such-verb", 2}, Case{"solution", 2},
                Case{"solution not-there.toml", 2}, Case{"log list --log not-there.sqlite", 2},
                Case{"log verify --log not-there.sqlite", 2}, Case{"log add gossip --tank T --note x", 2});
   const Bench bench;

@@ -11,11 +11,11 @@ TEST_CASE("every sheet is at most 80 columns wide", "[unit][command]") {
       "s.toml",
       "temperature = \"25 degC\"\n[per_kg_water]\n\"NiSO4.6H2O\" = 1.0\n\"H2SO4\" = 0.1\n\"H3BO3\" = 0.4\n");
   const std::string files = app_test::tank + " " + app_test::readings;
-  const std::string arguments = GENERATE_COPY(
-      values<std::string>({"solution s.toml", "tank " + app_test::tank,
-                           "tank " + app_test::tank + " --readings " + app_test::readings, "analyse " + files,
-                           "dose " + files, "path " + app_test::tank + " --add '12 kg nickel-sulfate'",
-                           "sources Ni^2+", "sources 'NiSO4.6H2O'", "plugins show watts-nickel"}));
+  const std::string arguments = GENERATE_COPY(values<std::string>(
+      {"solution s.toml", "tank " + app_test::tank,
+       "tank " + app_test::tank + " --readings " + app_test::readings, "analyse " + files, "dose " + files,
+       "path " + app_test::tank + " --add '12 kg nickel-sulfate'", "sources Ni^2+", "sources 'NiSO4.6H2O'",
+       "plugins show watts-nickel", "plugins check watts-nickel"}));
   const auto run = bench.run(arguments);
   INFO(arguments << "\n" << run.out << run.err);
   CHECK(run.status <= 1);
@@ -49,7 +49,7 @@ TEST_CASE("the slip tells its doubts in few words, defers once, and shows what w
 TEST_CASE("the help of every verb ends with the options all of them take", "[unit][command]") {
   const std::string verb =
       GENERATE("analyse", "dose", "tank", "path", "log", "log add", "log list", "solution", "sources",
-               "plugins", "plugins show", "plugins allow", "plugins forget");
+               "plugins", "plugins show", "plugins check", "plugins allow", "plugins forget");
   const auto run = Bench().run(verb + " --help");
   CHECK_THAT(run.out, Catch::Contains("Every verb takes:") && Catch::Contains("--log") &&
                           Catch::Contains("--json") && Catch::Contains("--plugins"));
