@@ -20,7 +20,7 @@ struct Chemistry::Prepared {
   std::shared_ptr<const speciation::ChemicalSystem> system;
   speciation::Equilibria equilibria;
   Solver working, idle;
-  matter::SolutionDensity density;
+  matter::ComponentDensity density;
   std::vector<std::vector<double>> quantity_counts;  ///< per quantity, over the components
   std::vector<std::size_t> watched;                  ///< positions in the system's solids
   std::size_t by_charge;                             ///< component found by charge
@@ -52,19 +52,23 @@ double room_mol(const Solver& solver, const TankState& state, std::size_t solid)
   return answer ? -answer->solid_mol[solid] : not_given;
 }
 
-/// pH at which a hydroxide would begin to form as alkali is added, by secants on its saturation.
+/// pH at which a hydroxide would begin to form as alkali is added, by secants on its saturation. NaN where
+/// they lead nowhere: an amphoteric metal in alkali, whose hydroxide forms as alkali is used up.
 double onset_pH(const Solver& solver, const TankState& state, const Equilibrium& now, std::size_t solid,
                 std::size_t counter_ion) {
   const double hydroxides = -solver.system().solids()[solid].made_of[0];
   double pH = now.pH() - now.saturation_index[solid] / hydroxides;
-  for (int step = 0; step < 3; ++step) {
+  double saturation = 0;
+  for (int step = 0; step < 4; ++step) {
     Task task = task_for(state);
     task.pH = speciation::HeldPh{pH, counter_ion};
     const auto held = solver.solve(task);
     if (!held) return not_given;
-    pH -= held->saturation_index[solid] / hydroxides;
+    saturation = held->saturation_index[solid];
+    pH -= saturation / hydroxides;
   }
-  return pH;
+  constexpr double met = 0.02;  // of a log unit; the last step has gone on from there
+  return std::abs(saturation) < met ? pH : not_given;
 }
 
 /// The first component that carries charge and is not H^+.
@@ -102,7 +106,7 @@ Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Cels
   if (!at_work) return at_work.problems();
   auto at_rest = Solver::prepare(shared, kind, idle, type.sets.acid);
   if (!at_rest) return at_rest.problems();
-  auto density = matter::SolutionDensity::for_species(shared->components());
+  auto density = matter::ComponentDensity::prepare(shared->components());
   if (!density) return density.problems();
 
   std::vector<std::vector<double>> counts;
@@ -231,7 +235,7 @@ Result<TankView> Chemistry::view(const TankState& state) const {
     const speciation::SystemSolid& solid = p.system->solids()[k];
     if (is_hydroxide(solid)) {
       room.forms_above_pH = onset_pH(p.working, state, *now, k, p.counter_ion);
-      continue;
+      if (!std::isnan(room.forms_above_pH)) continue;
     }
     const auto formula = matter::Formula::parse(solid.formula);
     if (!formula) continue;

@@ -1,5 +1,7 @@
 #include "contents.hpp"
 
+#include <bathwright/matter/component_density.hpp>
+
 #include <algorithm>
 #include <cmath>
 
@@ -26,7 +28,7 @@ Result<double> water_of_a_litre(const Recipe& recipe, const speciation::Composit
   std::vector<std::string> names;
   std::vector<double> mol;
   for (const auto& [name, amount] : component_mol) names.push_back(name), mol.push_back(amount);
-  const auto model = ComponentDensity::prepare(names);
+  const auto model = matter::ComponentDensity::prepare(names);
   if (!model) return model.problems();
   constexpr int most_steps = 200;
   constexpr double settled_L = 1e-14;
@@ -86,46 +88,6 @@ Result<Contents> weigh_in(const Recipe& recipe, const std::vector<Substance>& su
   if (!water_kg) return water_kg.problems();
   contents.water_kg = *water_kg;
   return contents;
-}
-
-Result<ComponentDensity> ComponentDensity::prepare(const std::vector<std::string>& components) {
-  std::vector<std::string> names = components;
-  names.emplace_back("OH^-");
-  auto density = matter::SolutionDensity::for_species(names);
-  if (!density) return density.problems();
-  const auto proton = std::find(components.begin(), components.end(), "H^+");
-  if (proton == components.end()) return ComponentDensity(*std::move(density), std::nullopt);
-  return ComponentDensity(*std::move(density), static_cast<std::size_t>(proton - components.begin()));
-}
-
-ComponentDensity::Counted ComponentDensity::counted(const std::vector<double>& component_mol,
-                                                    double water_kg) const {
-  Counted c{component_mol, water_kg};
-  c.mol.push_back(0);
-  if (proton_ && component_mol[*proton_] < 0) {
-    c.mol.back() = -component_mol[*proton_];
-    c.mol[*proton_] = 0;
-    c.water_kg -= c.mol.back() * water_kg_per_mol;  // OH^- is H2O less H^+
-  }
-  return c;
-}
-
-double ComponentDensity::volume_L(const std::vector<double>& component_mol, double water_kg,
-                                  units::Celsius t) const {
-  const Counted c = counted(component_mol, water_kg);
-  return density_.volume_L(c.mol, c.water_kg, t);
-}
-
-units::KilogramsPerLitre ComponentDensity::density(const std::vector<double>& component_mol, double water_kg,
-                                                   units::Celsius t) const {
-  const Counted c = counted(component_mol, water_kg);
-  return density_.density(c.mol, c.water_kg, t);
-}
-
-std::vector<std::string> ComponentDensity::range_warnings(const std::vector<double>& component_mol,
-                                                          double water_kg, units::Celsius t) const {
-  const Counted c = counted(component_mol, water_kg);
-  return density_.range_warnings(c.mol, c.water_kg, t);
 }
 
 }  // namespace bathwright::solution

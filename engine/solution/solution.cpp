@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/matter/component_density.hpp>
 #include <bathwright/solution/solution.hpp>
 #include <bathwright/speciation/coverage.hpp>
 #include <bathwright/speciation/sensitivity.hpp>
@@ -260,7 +261,7 @@ Result<Solution> describe(const Recipe& recipe, const Chosen& chosen) {
   const Equilibrium& e = solved.equilibrium;
   const ChemicalSystem& system = solved.solver.system();
   const Dissolved content = dissolved(solved);
-  const auto density = ComponentDensity::prepare(system.components());
+  const auto density = matter::ComponentDensity::prepare(system.components());
   if (!density) return density.problems();
 
   Solution out;

@@ -3,7 +3,7 @@
 #pragma once
 
 #include <bathwright/bath/tank.hpp>
-#include <bathwright/matter/density.hpp>
+#include <bathwright/matter/component_density.hpp>
 #include <bathwright/speciation/components.hpp>
 #include <bathwright/speciation/solver.hpp>
 #include <map>
@@ -83,7 +83,7 @@ class Chemistry {
   [[nodiscard]] units::Celsius working_temperature() const;
   [[nodiscard]] units::Celsius idle_temperature() const;
 
-  /// Volume of the solution at its temperature, L. Smooth; allocates nothing.
+  /// Volume of the solution at its temperature, L. Smooth but where acid turns to alkali.
   [[nodiscard]] double volume_L(const TankState& state) const;
   [[nodiscard]] units::KilogramsPerLitre density(const TankState& state) const;
 
