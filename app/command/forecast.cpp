@@ -154,6 +154,7 @@ int run(const Context& context, const Options& options) {
                             bands ? &*bands : nullptr,
                             bands ? bands->limits : forecast->limits(*one),
                             settled ? *settled : std::nullopt,
+                            settled ? "nothing leaves the tank" : settled.problems().front().what,
                             {},
                             options.policy,
                             start->read.from};

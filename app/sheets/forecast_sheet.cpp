@@ -61,7 +61,6 @@ Lines limits_table(const ForecastPage& page) {
   const bool sampled = page.bands != nullptr;
   std::vector<Column> columns = {{"limit"}, {sampled ? "day, median" : "day", Align::number}};
   if (sampled) columns.push_back({"5 to 95 %"}), columns.push_back({"chance", Align::number});
-  columns.push_back({"why"});
   Table table(columns);
   for (const auto& limit : page.limits) {
     if (!limit.day_p50 && !limit.day_p05 && limit.share == 0) continue;
@@ -70,7 +69,6 @@ Lines limits_table(const ForecastPage& page) {
       row.push_back(day_of(limit.day_p05) + " to " + day_of(limit.day_p95));
       row.push_back(fixed(100 * limit.share, 0) + " %");
     }
-    row.emplace_back(forecast::name(limit.cause));
     table.add(row);
   }
   return table.empty()
@@ -99,7 +97,7 @@ Lines forecast_sheet(const ForecastPage& page) {
         2);
   heading(lines, "Levels by day, g/L");
   append(lines, levels_by_day(page));
-  if (!page.steady_state) say(lines, "  Nothing leaves the tank: what comes in goes on building up.", 2);
+  if (!page.steady_state) say(lines, "  It does not settle: " + page.why_unsettled + ".", 2);
   heading(lines, "Cost and waste");
   say(lines,
       "  Chemicals " + figure(last.cost, 4) + " " + page.tank.currency + ", waste " +

@@ -2,6 +2,7 @@
 #include <bathwright/matter/formula.hpp>
 #include <bathwright/speciation/session.hpp>
 #include <cmath>
+#include <numeric>
 
 #include "prepared.hpp"
 
@@ -85,8 +86,8 @@ class Runner {
   }
 
   /// The amounts alone, day after day, without equilibria but where an addition needs one.
-  Outcome pass(int days) {
-    for (int day = 0; day < days; ++day)
+  Outcome pass(int first_day, int days) {
+    for (int day = first_day; day < first_day + days; ++day)
       if (auto lived = live(day); !lived) return lived;
     return Done{};
   }
@@ -306,14 +307,27 @@ Result<std::optional<std::vector<double>>> Forecast::steady_state(const TankStat
     per_day += decant.litres / p.tank.working_volume.v / decant.every_days;
   constexpr double most_days = 200'000, time_constants = 25;
   if (!(per_day * most_days > time_constants)) return std::optional<std::vector<double>>{};
+  // Over whole rounds of the calendar and of what comes every so many days, so that the mean is one.
+  int round = days_a_week;
+  const auto fit = [&](int every) {
+    constexpr int longest = 364;
+    if (const int both = std::lcm(round, every); both <= longest) round = both;
+  };
+  for (const Decant& decant : p.policy.decants) fit(decant.every_days);
+  for (const FreezeOut& freeze : p.policy.freeze_outs) fit(freeze.every_days);
+  for (const Replenishment& rule : p.policy.replenishment) fit(rule.every_days);
   Runner runner(p, start, as_it_stands);
-  if (auto passed = runner.pass(static_cast<int>(time_constants / per_day)); !passed)
-    return passed.problems();
-  std::vector<double> levels;
-  const double V = p.chemistry.volume_L(runner.state());
-  for (const bath::Quantity& q : p.chemistry.type().quantities)
-    levels.push_back(p.chemistry.quantity_mol(q, runner.state().component_mol) * q.formula.molar_mass().v /
-                     V);
+  const auto rounds = static_cast<int>(time_constants / per_day / round) + 1;
+  if (auto passed = runner.pass(0, rounds * round); !passed) return passed.problems();
+  const auto& quantities = p.chemistry.type().quantities;
+  std::vector<double> levels(quantities.size(), 0);
+  for (int day = 0; day < round; ++day) {
+    if (auto passed = runner.pass(rounds * round + day, 1); !passed) return passed.problems();
+    const double V = p.chemistry.volume_L(runner.state());
+    for (std::size_t q = 0; q < quantities.size(); ++q)
+      levels[q] += p.chemistry.quantity_mol(quantities[q], runner.state().component_mol) *
+                   quantities[q].formula.molar_mass().v / V / round;
+  }
   return std::optional(std::move(levels));
 }
 
@@ -346,7 +360,7 @@ Result<std::optional<double>> Forecast::bleed_to_hold(const TankState& start, co
     const auto level = settles_at(high);
     if (!level) return level.problems();
     const double high_inverse = 1 / *level;
-    if (std::abs(high_inverse - wanted) < 1e-8 * wanted) return std::optional(high);
+    if (std::abs(high_inverse - wanted) < 1e-6 * wanted) return std::optional(high);
     const double slope = (high_inverse - low_inverse) / (high - low);
     const double next = slope > 0 ? std::max(high + (wanted - high_inverse) / slope, high / 4) : 2 * high;
     low = high, low_inverse = high_inverse;

@@ -19,7 +19,8 @@ constexpr double none = std::numeric_limits<double>::quiet_NaN();
 double number(const json& value) { return value.is_number() ? value.get<double>() : none; }
 
 std::string figure(double value, const char* format = "{:.2f}") {
-  return std::isnan(value) ? "" : fmt::format(fmt::runtime(format), value);
+  const std::string text = std::isnan(value) ? "" : fmt::format(fmt::runtime(format), value);
+  return text.find_first_not_of("-0.") == std::string::npos && text.starts_with('-') ? text.substr(1) : text;
 }
 
 std::string range(const Limits& limits) {

@@ -19,6 +19,7 @@ struct ForecastPage {
   const forecast::Bands* bands = nullptr;  ///< nullptr: no samples were asked for
   std::vector<forecast::LimitMet> limits;  ///< of the bands, or of the run
   std::optional<std::vector<double>> steady_state;
+  std::string why_unsettled;  ///< where there is none
   std::vector<BleedToHold> bleeds;
   std::string policy_file, state_from;
 };

@@ -104,7 +104,7 @@ class Forecast {
   [[nodiscard]] Result<Bands> sample(const bath::TankState& start, const Sampling& sampling,
                                      const std::function<bool(double)>& progress = {}) const;
 
-  /// Where the levels settle if all goes on like this, g/L per quantity: the mean of a week after ten times
+  /// Where the levels settle if all goes on like this, g/L per quantity: the mean of a round of the calendar after 25 times
   /// the time constant. Nothing where they do not (nothing leaves the tank).
   [[nodiscard]] Result<std::optional<std::vector<double>>> steady_state(const bath::TankState& start) const;
 
