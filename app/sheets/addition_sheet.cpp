@@ -120,7 +120,7 @@ void best_plan(Lines& lines, const bath::Tank& tank, const bath::BathType& type,
     append(lines, levels(judge(tank, type, plan.final_view.quantity_g_per_L, plan.final_view.pH)));
     handling(lines, tank, plan);
   }
-  if (!plan.unmet.empty()) heading(lines, "Not reached");
+  if (!plan.unmet.empty()) heading(lines, "Not at its aim");
   for (const std::string& unmet : plan.unmet) say(lines, "  " + unmet, 2);
 }
 

@@ -26,6 +26,7 @@ struct Supply {
   const ShelfItem* item;
   bath::Brings brings;
   double price_per_kg;
+  bool only_source = false;  ///< of something the tank aims at
 };
 
 double price_per_kg(const ShelfItem& item) {
@@ -194,22 +195,36 @@ std::optional<double> chance_in_window(const Tank& tank, const Chemistry& chemis
   return chance;
 }
 
-std::vector<std::string> unmet_aims(const Tank& tank, const Chemistry& chemistry, const bath::TankView& end) {
-  std::vector<std::string> unmet;
+/// What does not end at its aim, and whether all of it ends inside its window at least.
+struct Unmet {
+  std::vector<std::string> words;
+  bool inside = true;
+
+  void add(const Aim& aim, double value, std::string what) {
+    const double rounding = 1e-9 * std::abs(aim.aim);
+    const bool in_window = value >= aim.low - rounding && value <= aim.high + rounding;
+    inside = inside && in_window;
+    words.push_back(std::move(what) + (in_window ? "; inside its window" : ""));
+  }
+};
+
+Unmet unmet_aims(const Tank& tank, const Chemistry& chemistry, const bath::TankView& end) {
+  Unmet unmet;
   const auto& quantities = chemistry.type().quantities;
   for (const Aim& aim : tank.aims) {
     if (aim.quantity == "pH") {
       if (std::abs(end.pH - aim.aim) > met_pH)
-        unmet.push_back("pH ends at " + units::significant(end.pH, 3) + ", aim " +
-                        units::significant(aim.aim, 3));
+        unmet.add(aim, end.pH,
+                  "pH ends at " + units::significant(end.pH, 3) + ", aim " + units::significant(aim.aim, 3));
       continue;
     }
     for (std::size_t q = 0; q < quantities.size(); ++q)
       if (quantities[q].id == aim.quantity &&
           std::abs(end.quantity_g_per_L[q] - aim.aim) > met_relative * aim.aim)
-        unmet.push_back(quantities[q].label + " ends at " + units::significant(end.quantity_g_per_L[q], 4) +
-                        " g/L, aim " + units::significant(aim.aim, 4) + " g/L" +
-                        (end.quantity_g_per_L[q] > aim.aim ? "; only taking bath out brings it lower" : ""));
+        unmet.add(aim, end.quantity_g_per_L[q],
+                  quantities[q].label + " ends at " + units::significant(end.quantity_g_per_L[q], 4) +
+                      " g/L, aim " + units::significant(aim.aim, 4) + " g/L" +
+                      (end.quantity_g_per_L[q] > aim.aim ? "; only taking bath out brings it lower" : ""));
   }
   return unmet;
 }
@@ -244,16 +259,30 @@ Result<Plan> make_plan(const Tank& tank, const Chemistry& chemistry, const TankS
   auto end = chemistry.view(plan.final_state);
   if (!end) return end.problems();
   plan.final_view = *std::move(end);
-  plan.unmet = unmet_aims(tank, chemistry, plan.final_view);
-  plan.feasible = plan.unmet.empty();
+  Unmet unmet = unmet_aims(tank, chemistry, plan.final_view);
+  plan.unmet = std::move(unmet.words);
+  plan.feasible = unmet.inside;
   for (const Step& step : plan.steps)
     for (const Check& check : step.checks) plan.feasible = plan.feasible && (check.ok || !check.stops);
   plan.probability_in_window = chance_in_window(tank, chemistry, now_view, plan.final_view, uncertainty);
   return plan;
 }
 
-bool is_acid(const Supply& supply) { return supply.brings.component_mol[0] > 0; }
-bool is_alkali(const Supply& supply) { return supply.brings.component_mol[0] < 0; }
+// The only source of something aimed at, lactic acid say, is no trim of the pH.
+bool is_acid(const Supply& supply) { return !supply.only_source && supply.brings.component_mol[0] > 0; }
+bool is_alkali(const Supply& supply) { return !supply.only_source && supply.brings.component_mol[0] < 0; }
+
+/// Marks each supply without which something aimed at could not be raised.
+void mark_only_sources(const Tank& tank, const Chemistry& chemistry, std::vector<Supply>& supplies) {
+  for (const Aim& aim : tank.aims) {
+    const Quantity* quantity = chemistry.type().quantity(aim.quantity);
+    if (!quantity) continue;
+    std::vector<Supply*> raise;
+    for (Supply& supply : supplies)
+      if (chemistry.quantity_mol(*quantity, supply.brings.component_mol) > 1e-9) raise.push_back(&supply);
+    if (raise.size() == 1) raise.front()->only_source = true;
+  }
+}
 
 bool doses(const Plan& plan, const std::vector<Supply>& supplies, bool (*kind)(const Supply&)) {
   return std::any_of(plan.additions.begin(), plan.additions.end(), [&](const Addition& addition) {
@@ -308,6 +337,7 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
       return Problem{Fault::bad_input, tank.file,
                      aim.quantity + " is not a quantity of " + chemistry.type().name, "", ""};
 
+  mark_only_sources(tank, chemistry, supplies);
   auto plan = least_cost_plan(tank, chemistry, now, sheet.now, supplies, uncertainty);
   if (!plan) return plan.problems();
   sheet.cautions = cautions_for(tank, chemistry.type(), *plan);

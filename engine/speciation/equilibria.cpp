@@ -224,6 +224,7 @@ void Equilibria::leave_out_held() {
 
 Result<Equilibria> Equilibria::with(const std::vector<StatedSpecies>& species,
                                     const std::vector<StatedSolid>& solids) const {
+  if (species.empty() && solids.empty()) return *this;
   Equilibria all = *this;
   const auto merge = [](auto& into, const auto& added) {
     for (const auto& one : added) supersede(into, one);

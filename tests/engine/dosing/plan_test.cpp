@@ -187,11 +187,17 @@ TEST_CASE("the cheaper of two bags is taken", "[unit][dosing]") {
 
 TEST_CASE("what the shelf cannot reach is said, with the nearest plan", "[failure][dosing]") {
   SECTION("too strong already") {
-    const dosing::Plan plan = planned(demo::state(300, 50, 42, 4.2, 2400)).plans.front();
+    const dosing::Plan plan = planned(demo::state(330, 50, 42, 4.2, 2400)).plans.front();
     CHECK_FALSE(plan.feasible);
     REQUIRE_FALSE(plan.unmet.empty());
     CHECK_THAT(plan.unmet.front(), Catch::Contains("aim 280"));
     CHECK(plan.final_view.volume_L <= 2550.0001);  // never over the brim
+  }
+  SECTION("too strong, but inside its window") {
+    const dosing::Plan plan = planned(demo::state(300, 50, 42, 4.2, 2400)).plans.front();
+    CHECK(plan.feasible);
+    REQUIRE_FALSE(plan.unmet.empty());
+    CHECK_THAT(plan.unmet.front(), Catch::Contains("inside its window"));
   }
   SECTION("nothing on the shelf for boric acid") {
     const dosing::Plan plan =

@@ -39,7 +39,7 @@ struct Step {
 
 struct Plan {
   std::string kind;       ///< "least cost"
-  bool feasible = false;  ///< every aim met, every check passed that stops a plan
+  bool feasible = false;  ///< every level ends inside its window, every check passed that stops a plan
   double cost = 0;
   double salt_load_mol = 0;  ///< ions brought in, mol: what makes the next bleed larger
   /// Chance that every controlled quantity ends inside its window, from the analysis' uncertainty alone,
@@ -49,7 +49,8 @@ struct Plan {
   std::vector<Step> steps;
   bath::TankView final_view;
   bath::TankState final_state;
-  std::vector<std::string> unmet;  ///< aims that cannot be reached with this shelf, and by how much
+  std::vector<std::string>
+      unmet;  ///< aims that cannot be reached with this shelf, by how much, whether inside
 };
 
 struct Refusal {
