@@ -1,5 +1,6 @@
 // bathwright path TANK --add ...: free ions, pH and headroom along an addition.
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/bath/interlock.hpp>
 #include <bathwright/sheets/path_sheet.hpp>
 #include <bathwright/units/read.hpp>
 
@@ -34,6 +35,11 @@ Result<Portion> read_portion(const std::string& text, const Shop& shop) {
     return Problem{Fault::bad_input, where, id + " is not on the shelf or in the catalogue",
                    "the id of a chemical", close ? "Did you mean " + *close + "?" : ""};
   }
+  const bath::Incompatible* rule = bath::forbidding_rule(shop.type(), *stock);
+  if (rule && rule->level == bath::Level::stop)
+    return Problem{Fault::refused, where,
+                   id + " must not go into this bath (" + rule->with + "): " + rule->why, "",
+                   "There is no way round this."};
   auto brings = shop.chemistry.brings(*stock);
   if (!brings) return brings.problems();
   const auto volume = units::read_volume(amount, where);

@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <bathwright/activity/model.hpp>
+#include <bathwright/bath/interlock.hpp>
 #include <bathwright/dosing/plan.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
@@ -324,7 +325,15 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
   sheet.now = *std::move(view);
 
   std::vector<Supply> supplies;
+  std::vector<std::string> warnings;
   for (const ShelfItem& item : tank.shelf) {
+    const bath::Incompatible* rule = bath::forbidding_rule(chemistry.type(), item.stock);
+    if (rule && rule->level == bath::Level::stop) {
+      sheet.refused.push_back(
+          {item.stock.id + " must not go into this bath: " + rule->why, "interlock: " + rule->with});
+      continue;
+    }
+    if (rule) warnings.push_back(item.stock.name + ": " + rule->why);
     auto brings = chemistry.brings(item.stock);
     if (!brings)
       sheet.refused.push_back(
@@ -341,6 +350,7 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
   auto plan = least_cost_plan(tank, chemistry, now, sheet.now, supplies, uncertainty);
   if (!plan) return plan.problems();
   sheet.cautions = cautions_for(tank, chemistry.type(), *plan);
+  sheet.cautions.insert(sheet.cautions.end(), warnings.begin(), warnings.end());
   sheet.plans.push_back(*std::move(plan));
   return sheet;
 }
