@@ -35,10 +35,13 @@ int list(const Context& context) {
     return Exit::all_well;
   }
   sheets::Lines lines;
-  sheets::Table table({{"bath type"}, {"version"}, {"state"}, {"SHA-256"}, {"file"}});
+  sheets::Table table({{"bath type"}, {"version"}, {"state"}, {"SHA-256"}, {"kind"}});
   for (const auto& listed : types.list())
-    table.add({listed.id, listed.version, std::string(plugin_host::name(listed.state)),
-               listed.sha256.substr(0, shown_digits), listed.path.filename().string()});
+    table.add({listed.id.empty() ? listed.path.filename().string() : listed.id, listed.version,
+               std::string(plugin_host::name(listed.state)), listed.sha256.substr(0, shown_digits),
+               listed.path.extension() == ".so"     ? "compiled"
+               : listed.path.extension() == ".toml" ? "TOML"
+                                                    : ""});
   if (table.empty())
     sheets::say(lines, "No bath type found. Name a folder with --plugins.");
   else

@@ -72,3 +72,25 @@ TEST_CASE("the user's own folder is searched, the working directory is not", "[u
   CHECK(state_of(bench, own / "sound.bathtype.so") == "not allowed yet");
   CHECK(state_of(bench, bench.folder() / "work/sound.bathtype.so") == "not listed");
 }
+
+TEST_CASE("a plugin that kills the program is left alone at the next start, and all others work",
+          "[failure][command]") {
+  const Bench bench;
+  const fs::path file = put(bench, "crashes-in-the-host");  // and not in the probe
+  put(bench, "sound");
+  const std::string allow = "plugins allow --yes mine/";
+  REQUIRE(bench.run(allow + "sound.bathtype.so").status == 0);
+  REQUIRE(bench.run(allow + "crashes-in-the-host.bathtype.so").status == 0);
+  const std::string list = "plugins list --plugins mine";
+  CHECK(bench.run(list).status > 3);  // killed
+
+  const auto next = bench.run(list);
+  CHECK(next.status == 0);
+  CHECK_THAT(next.out, Contains("the program died while loading it") && Contains("plugins allow"));
+  CHECK(state_of(bench, file) == "quarantined");
+  CHECK(state_of(bench, bench.folder() / "work/mine/sound.bathtype.so") == "ready");
+  CHECK(bench.run("plugins show watts-nickel").status == 0);
+
+  CHECK(bench.run(allow + "crashes-in-the-host.bathtype.so").status == 0);
+  CHECK(bench.run(list).status > 3);
+}

@@ -3,6 +3,7 @@
 
 #include "../stated_bath.hpp"
 
+#include <errno.h>
 #include <fcntl.h>
 #include <pthread.h>
 #include <unistd.h>
@@ -12,6 +13,7 @@
 #include <csignal>
 #include <cstdio>
 #include <cstdlib>
+#include <string_view>
 
 namespace {
 
@@ -54,6 +56,8 @@ struct AtLoad {
       auto* more = static_cast<volatile char*>(std::malloc(MiB));
       for (std::size_t i = 0; i < MiB; i += 4096) more[i] = 1;  // at the end, a null pointer
     }
+#elif defined FAULT_crashes_in_the_host
+    if (std::string_view(program_invocation_short_name) != "bathwright_probe") crash();
 #elif defined FAULT_hangs
     ::sleep(60);
 #endif
