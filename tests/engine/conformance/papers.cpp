@@ -1,4 +1,6 @@
 // README.md and examples.toml of a bath type, and what a release must hold.
+#include <unistd.h>
+
 #include <algorithm>
 #include <bathwright/conformance/conformance.hpp>
 #include <catch2/catch.hpp>
@@ -34,7 +36,7 @@ std::string faults_of(const std::string& page) {
 /// A folder with a bath type's file in it, and its papers where they are given.
 class Papers {
  public:
-  Papers() : folder_(fs::temp_directory_path() / "bathwright-papers") {
+  Papers() : folder_(fs::temp_directory_path() / ("bathwright-papers-" + std::to_string(::getpid()))) {
     fs::remove_all(folder_);
     fs::create_directories(folder_ / "brine");
   }
