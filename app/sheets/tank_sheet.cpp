@@ -9,14 +9,20 @@
 namespace bathwright::sheets {
 namespace {
 
+/// A row each, and under it what it says: labels and figures stay in line, however long the words.
 Lines indicators(const bath::BathType& type, const std::vector<bath::IndicatorValue>& values) {
-  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"what it says"}});
-  for (const auto& v : values) {
-    const std::string state = v.value ? std::string(words(standing(type, v.id, *v.value))) : "not available";
+  Table table({{"indicator"}, {"value", Align::number}, {"unit"}, {"state"}});
+  for (const auto& v : values)
     table.add({v.label, v.value ? figure(*v.value) : "", v.unit,
-               (state.empty() ? "" : state + ". ") + (v.value ? v.meaning : v.note)});
+               v.value ? std::string(words(standing(type, v.id, *v.value))) : "not available"});
+  const Lines rows = table.lines();
+  if (rows.size() != values.size() + 1) return rows;  // a label so long that the table itself had to wrap
+  Lines lines = {rows.front()};
+  for (std::size_t i = 0; i < values.size(); ++i) {
+    lines.push_back(rows[i + 1]);
+    say(lines, "    " + (values[i].value ? values[i].meaning : values[i].note));
   }
-  return table.lines();
+  return lines;
 }
 
 /// What a nose or a lung would meet at the surface if nothing moved the air. Carbon dioxide, oxygen and
