@@ -12,8 +12,8 @@ using namespace bathwright::plugin_host;
 namespace {
 
 struct Row {
-  const char *plugin, *says;   ///< says: at the start of a problem, after the plugin's name
-  const char* when_busy = "";  ///< or this, where the machine has no time for it
+  const char *plugin, *says;             ///< says: at the start of a problem, after the plugin's name
+  std::vector<const char*> when_busy{};  ///< or one of these, where the machine has no time for it
 };
 
 // Ends of a process differ under a sanitizer, which reports before it ends it.
@@ -63,12 +63,16 @@ const std::vector<Row> endings = {
     {"crashes-at-load", "crashed while it was loaded (signal 11, Segmentation fault)"},
     {"aborts", "crashed while it was loaded (signal 6, Aborted)"},
     {"exits", "ended its process while it was loaded (exit status 0)"},
-    {"takes-memory", "crashed while it was loaded (signal 11, Segmentation fault; it had taken ",
-     "had not answered after 5 s while it was loaded"},
-    {"loops-at-load", "used more than 2 s of processor time while it was loaded",
-     "had not answered after 5 s while it was loaded"},
-    {"loops-in-an-indicator", "used more than 2 s of processor time in indicator 'chloride' (usual levels)",
-     "had not answered after 5 s in indicator 'chloride' (usual levels)"},
+    {"takes-memory",
+     "crashed while it was loaded (signal 11, Segmentation fault; it had taken ",
+     {"had not answered after 5 s while it was loaded",
+      "used more than 2 s of processor time while it was loaded"}},  // which clearing its pages may take
+    {"loops-at-load",
+     "used more than 2 s of processor time while it was loaded",
+     {"had not answered after 5 s while it was loaded"}},
+    {"loops-in-an-indicator",
+     "used more than 2 s of processor time in indicator 'chloride' (usual levels)",
+     {"had not answered after 5 s in indicator 'chloride' (usual levels)"}},
     {"hangs", "had not answered after 5 s while it was loaded"},
     {"forks", "asked the system for what no bath type needs while it was loaded"},
     {"writes-a-file", "asked the system for what no bath type needs while it was loaded"},
@@ -98,9 +102,9 @@ void check_refused(const std::vector<Row>& table) {
     INFO(reasons);
     CHECK(listed->state == State::refused);
     const auto told = [&](const char* says) {
-      return *says && reasons.find(row.plugin + (".bathtype.so: " + std::string(says))) != std::string::npos;
+      return reasons.find(row.plugin + (".bathtype.so: " + std::string(says))) != std::string::npos;
     };
-    CHECK((told(row.says) || told(row.when_busy)));
+    CHECK((told(row.says) || std::ranges::any_of(row.when_busy, told)));
   }
   CHECK(types.list().back().state == State::ready);
   CHECK(types.find("test-bath"));
