@@ -24,8 +24,6 @@ struct Options {
   std::uint64_t seed = 1;
 };
 
-Json finite(double value) { return std::isfinite(value) ? Json(value) : Json(nullptr); }
-
 Json json_of(const sheets::ForecastPage& page) {
   const bath::BathType& type = page.forecast.chemistry().type();
   Json doc = document({});
@@ -47,7 +45,7 @@ Json json_of(const sheets::ForecastPage& page) {
   doc["steady_state"] = Json::object();
   if (page.steady_state)
     for (std::size_t q = 0; q < type.quantities.size(); ++q)
-      doc["steady_state"][type.quantities[q].id] = finite((*page.steady_state)[q]);
+      doc["steady_state"][type.quantities[q].id] = (*page.steady_state)[q];
   doc["bleed_to_hold"] = Json::object();
   for (const auto& bleed : page.bleeds) doc["bleed_to_hold"][bleed.limit] = bleed.litres_per_day;
   doc["series"] = Json::array();
@@ -57,8 +55,8 @@ Json json_of(const sheets::ForecastPage& page) {
     for (std::size_t q = 0; q < type.quantities.size(); ++q)
       row["concentrations"][type.quantities[q].id] = day.quantity_g_per_L[q];
     for (std::size_t s = 0; s < type.solids.size(); ++s)
-      row["headroom"][type.solids[s].name] = {{"working_log10", finite(day.working_log10[s])},
-                                              {"idle_log10", finite(day.idle_log10[s])}};
+      row["headroom"][type.solids[s].name] = {{"working_log10", day.working_log10[s]},
+                                              {"idle_log10", day.idle_log10[s]}};
     row["cost"] = day.cost;
     row["waste_L"] = day.waste_L;
     row["drag_out_L"] = day.drag_out_L;

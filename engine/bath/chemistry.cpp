@@ -34,18 +34,11 @@ constexpr activity::ModelKind model_for(activity::Convention convention) {
                                                          : activity::ModelKind::sit;
 }
 
-Task task_for(const TankState& state) {
-  Task task;
-  task.component_mol = state.component_mol;
-  task.water_kg = state.water_kg;
-  return task;
-}
-
 bool is_hydroxide(const speciation::SystemSolid& solid) { return solid.made_of[0] < 0; }
 
 /// mol of a solid that would still dissolve (positive) or would crystallise (negative).
 double room_mol(const Solver& solver, const TankState& state, std::size_t solid) {
-  Task task = task_for(state);
+  Task task = task_of(state);
   task.solids.assign(solver.system().solids().size(), SolidRule::report_only);
   task.solids[solid] = SolidRule::in_excess;
   const auto answer = solver.solve(task);
@@ -60,7 +53,7 @@ double onset_pH(const Solver& solver, const TankState& state, const Equilibrium&
   double pH = now.pH() - now.saturation_index[solid] / hydroxides;
   double saturation = 0;
   for (int step = 0; step < 4; ++step) {
-    Task task = task_for(state);
+    Task task = task_of(state);
     task.pH = speciation::HeldPh{pH, counter_ion};
     const auto held = solver.solve(task);
     if (!held) return not_given;
@@ -79,6 +72,13 @@ std::size_t first_ion(const speciation::ChemicalSystem& system) {
 }
 
 }  // namespace
+
+Task task_of(const TankState& state) {
+  Task task;
+  task.component_mol = state.component_mol;
+  task.water_kg = state.water_kg;
+  return task;
+}
 
 Result<Chemistry> Chemistry::prepare(const BathType& type, Celsius working, Celsius idle) {
   Problems problems;
@@ -180,11 +180,11 @@ double Chemistry::quantity_g_per_L(const Quantity& quantity, const TankState& st
 }
 
 Result<Equilibrium> Chemistry::speciate(const TankState& state) const {
-  return working().solve(task_for(state));
+  return working().solve(task_of(state));
 }
 
 Result<TankView> Chemistry::quick_view(const TankState& state) const {
-  const auto now = working().solve(task_for(state)), cold = idle().solve(task_for(state));
+  const auto now = working().solve(task_of(state)), cold = idle().solve(task_of(state));
   if (!now) return now.problems();
   if (!cold) return cold.problems();
   return view_of(state, *now, *cold);
@@ -225,7 +225,7 @@ TankView Chemistry::view_of(const TankState& state, const Equilibrium& now, cons
 
 Result<TankView> Chemistry::view(const TankState& state) const {
   const Prepared& p = *prepared_;
-  const auto now = p.working.solve(task_for(state)), cold = p.idle.solve(task_for(state));
+  const auto now = p.working.solve(task_of(state)), cold = p.idle.solve(task_of(state));
   if (!now) return now.problems();
   if (!cold) return cold.problems();
   TankView view = view_of(state, *now, *cold);
@@ -385,7 +385,7 @@ Result<TankState> Chemistry::state_from(const std::map<std::string, double>& g_p
   for (int round = 0; round < 20; ++round) {
     with_acid();
     if (Outcome filled = fill_up(); !filled) return filled.problems();
-    Task task = task_for(state);
+    Task task = task_of(state);
     task.component_mol[0] = 0;
     task.component_mol[p.by_charge] = balancing;
     task.pH = speciation::HeldPh{*pH, p.by_charge};

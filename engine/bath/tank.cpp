@@ -3,6 +3,8 @@
 
 namespace bathwright::bath {
 
+double ShelfItem::price_per_kg() const { return priced_per == Per::litre ? price / stock.kg_per_L : price; }
+
 const Aim* Tank::aim(std::string_view quantity) const {
   const auto found =
       std::find_if(aims.begin(), aims.end(), [&](const Aim& a) { return a.quantity == quantity; });

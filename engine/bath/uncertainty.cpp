@@ -11,13 +11,6 @@ using speciation::Solver;
 using speciation::Task;
 using speciation::Uncertainty;
 
-Task task_for(const TankState& state) {
-  Task task;
-  task.component_mol = state.component_mol;
-  task.water_kg = state.water_kg;
-  return task;
-}
-
 std::optional<Uncertainty> uncertainty_of(const Solver& solver, const Task& task) {
   const auto answer = solver.solve(task);
   if (!answer) return std::nullopt;
@@ -27,7 +20,7 @@ std::optional<Uncertainty> uncertainty_of(const Solver& solver, const Task& task
 
 std::optional<Uncertainty> at_pH(const Solver& solver, const TankState& state, double pH,
                                  std::size_t counter_ion) {
-  Task task = task_for(state);
+  Task task = task_of(state);
   task.pH = speciation::HeldPh{pH, counter_ion};
   return uncertainty_of(solver, task);
 }
@@ -36,14 +29,14 @@ std::optional<Uncertainty> at_pH(const Solver& solver, const TankState& state, d
 /// amounts.
 std::optional<Uncertainty> as_it_is(const Chemistry& chemistry, const Solver& solver,
                                     const TankState& state) {
-  if (!chemistry.type().acid_by_pH()) return uncertainty_of(solver, task_for(state));
-  const auto now = solver.solve(task_for(state));
+  if (!chemistry.type().acid_by_pH()) return uncertainty_of(solver, task_of(state));
+  const auto now = solver.solve(task_of(state));
   return now ? at_pH(solver, state, now->pH(), chemistry.counter_ion()) : std::nullopt;
 }
 
 /// Of the mol of a solid that would still dissolve or would crystallise.
 std::optional<double> u_room_mol(const Solver& solver, const TankState& state, std::size_t solid) {
-  Task task = task_for(state);
+  Task task = task_of(state);
   task.solids.assign(solver.system().solids().size(), SolidRule::report_only);
   task.solids[solid] = SolidRule::in_excess;
   const auto u = uncertainty_of(solver, task);

@@ -30,10 +30,6 @@ struct Supply {
   bool only_source = false;  ///< of something the tank aims at
 };
 
-double price_per_kg(const ShelfItem& item) {
-  return item.priced_per == ShelfItem::Per::litre ? item.price / item.stock.kg_per_L : item.price;
-}
-
 TankState mixed(TankState state, const std::vector<Supply>& supplies, std::span<const double> kg) {
   for (std::size_t c = 0; c < supplies.size(); ++c)
     state = Chemistry::after(std::move(state), supplies[c].brings, kg[c]);
@@ -48,9 +44,7 @@ struct AcidDemand {
 
 Result<AcidDemand> acid_demand(const Chemistry& chemistry, const TankState& state, double pH) {
   const auto held_at = [&](double at) -> Result<double> {
-    speciation::Task task;
-    task.component_mol = state.component_mol;
-    task.water_kg = state.water_kg;
+    speciation::Task task = bath::task_of(state);
     task.pH = speciation::HeldPh{at, chemistry.counter_ion()};
     const auto answer = chemistry.working().solve(task);
     if (!answer) return answer.problems();
@@ -339,7 +333,7 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
       sheet.refused.push_back(
           {brings.problems().front().text(), "the bath type must know what a chemical brings"});
     else
-      supplies.push_back({&item, *std::move(brings), price_per_kg(item)});
+      supplies.push_back({&item, *std::move(brings), item.price_per_kg()});
   }
   for (const Aim& aim : tank.aims)
     if (aim.quantity != "pH" && !chemistry.type().quantity(aim.quantity))

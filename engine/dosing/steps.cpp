@@ -113,8 +113,7 @@ Addition addition_of(const bath::ShelfItem& item, double kg) {
   addition.kg = kg;
   addition.unit = item.stock.liquid ? "L" : "kg";
   addition.amount = item.stock.liquid ? kg / item.stock.kg_per_L : kg;
-  addition.cost = item.priced_per == bath::ShelfItem::Per::litre ? item.price * kg / item.stock.kg_per_L
-                                                                 : item.price * kg;
+  addition.cost = item.price_per_kg() * kg;
   return addition;
 }
 

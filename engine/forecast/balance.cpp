@@ -2,7 +2,6 @@
 
 #include <algorithm>
 #include <bathwright/matter/formula.hpp>
-#include <bathwright/matter/water.hpp>
 #include <cmath>
 
 namespace bathwright::forecast {
@@ -13,12 +12,6 @@ using bath::CountedIn;
 
 Problem unknown(std::string what, std::string expected) {
   return {Fault::bad_input, "policy", std::move(what), std::move(expected), ""};
-}
-
-Result<Amounts> amounts_of(const Chemistry& chemistry, const matter::Formula& formula) {
-  auto brings = chemistry.brings_per_mol(formula);
-  if (!brings) return brings.problems();
-  return Amounts{std::move(brings->component_mol), brings->water_kg};
 }
 
 class Compiler {
@@ -33,13 +26,8 @@ class Compiler {
     out_.water = levels(policy_.water_g_per_L, "water");
     out_.drag_in = levels(policy_.drag_in_g_per_L, "drag_in");
     for (const bath::Use& use : chemistry_.type().uses) compile_use(use);
-    for (const Work& work : policy_.work) {
-      const auto at = std::ranges::find(chemistry_.type().uses, work.use, &bath::Use::id);
-      if (at == chemistry_.type().uses.end())
-        problems_.push_back(unknown("'" + work.use + "' is no use of " + chemistry_.type().name, uses()));
-      else
-        out_.work.push_back(static_cast<std::size_t>(at - chemistry_.type().uses.begin()));
-    }
+    for (const Work& work : policy_.work)
+      if (const auto at = use(work.use)) out_.work.push_back(*at);
     for (const Replenishment& rule : policy_.replenishment) compile_feed(rule);
     for (const FreezeOut& rule : policy_.freeze_outs) compile_freeze(rule);
     for (const OwnLimit& limit : policy_.limits) quantity(limit.quantity, "limit");
@@ -62,17 +50,29 @@ class Compiler {
     return found;
   }
 
-  /// Closes the charge with H^+, which is what splitting water does.
-  void neutralise(Amounts& amounts) const {
+  /// Position of a use; nothing, with a problem, where there is none of the name.
+  std::optional<std::size_t> use(const std::string& id) {
+    const auto& all = chemistry_.type().uses;
+    const auto at = std::ranges::find(all, id, &bath::Use::id);
+    if (at != all.end()) return static_cast<std::size_t>(at - all.begin());
+    problems_.push_back(unknown("'" + id + "' is no use of " + chemistry_.type().name, uses()));
+    return std::nullopt;
+  }
+
+  Amounts nothing() const { return {std::vector<double>(out_.charge.size(), 0), 0}; }
+
+  /// Closes the charge with one component: H^+ where water is split, else what is found by charge.
+  void neutralise(Amounts& amounts, std::size_t with) const {
     double charge = 0;
-    for (std::size_t i = 0; i < amounts.mol.size(); ++i) charge += out_.charge[i] * amounts.mol[i];
-    amounts.mol[0] -= charge;
+    for (std::size_t i = 0; i < amounts.component_mol.size(); ++i)
+      charge += out_.charge[i] * amounts.component_mol[i];
+    amounts.component_mol[with] -= charge / out_.charge[with];
   }
 
   void take(Amounts& into, const matter::Formula& formula, double mol, const std::string& where) {
-    const auto part = amounts_of(chemistry_, formula);
+    const auto part = chemistry_.brings_per_mol(formula);
     if (part)
-      into.add(*part, mol);
+      add(into, *part, mol);
     else
       problems_.push_back(unknown(where + ": " + text(part.problems()), ""));
   }
@@ -80,29 +80,26 @@ class Compiler {
   /// g/L of quantities as amounts per litre. Top-up water is neutral: what its ions leave is made up by the
   /// component found by charge.
   Amounts levels(const std::map<std::string, double>& g_per_L, const char* where) {
-    Amounts all{std::vector<double>(out_.charge.size(), 0), 0};
+    Amounts all = nothing();
     for (const auto& [id, grams] : g_per_L)
       if (const bath::Quantity* q = quantity(id, where))
         take(all, q->formula, grams / q->formula.molar_mass().v, where);
-    double charge = 0;
-    for (std::size_t i = 0; i < all.mol.size(); ++i) charge += out_.charge[i] * all.mol[i];
-    const std::size_t by_charge = chemistry_.found_by_charge();
-    all.mol[by_charge] -= charge / out_.charge[by_charge];
+    neutralise(all, chemistry_.found_by_charge());
     return all;
   }
 
   void compile_use(const bath::Use& use) {
-    const std::size_t n = out_.charge.size();
-    CompiledUse compiled{&use, {std::vector<double>(n, 0), 0}, {std::vector<double>(n, 0), 0}, 0};
+    constexpr std::size_t proton = 0;
+    CompiledUse compiled{&use, nothing(), nothing(), 0};
     for (const auto& effect : use.effects) {
       const bath::Quantity& q = *chemistry_.type().quantity(effect.quantity);
       take(compiled.effects, q.formula, effect.g_per_unit / q.formula.molar_mass().v, use.id);
     }
-    neutralise(compiled.effects);
+    neutralise(compiled.effects, proton);
     if (!use.deposits.empty()) {
       const bath::Quantity& metal = *chemistry_.type().quantity(use.deposits);
       take(compiled.metal, metal.formula, 1, use.id);
-      neutralise(compiled.metal);
+      neutralise(compiled.metal, proton);
       if (use.counted_in == CountedIn::ampere_hour)
         compiled.mol_per_unit = bath::metal_mol_per_Ah(use);
       else if (use.counted_in == CountedIn::gram_deposited)
@@ -127,15 +124,10 @@ class Compiler {
     }
     Compiled::Feed feed;
     feed.rule = &rule;
-    feed.per_kg = {brings->component_mol, brings->water_kg};
-    feed.price_per_kg =
-        item->priced_per == bath::ShelfItem::Per::litre ? item->price / item->stock.kg_per_L : item->price;
+    feed.per_kg = *brings;
+    feed.price_per_kg = item->price_per_kg();
     if (rule.by == Replenishment::By::use) {
-      const auto at = std::ranges::find(chemistry_.type().uses, rule.use, &bath::Use::id);
-      if (at == chemistry_.type().uses.end())
-        problems_.push_back(unknown("'" + rule.use + "' is no use of " + chemistry_.type().name, uses()));
-      else
-        feed.use = static_cast<std::size_t>(at - chemistry_.type().uses.begin());
+      feed.use = use(rule.use).value_or(0);
     } else if (rule.by == Replenishment::By::analysis) {
       const bath::Aim* aim = tank_.aim(rule.quantity);
       if (!aim)
@@ -148,13 +140,12 @@ class Compiler {
   }
 
   void compile_freeze(const FreezeOut& rule) {
-    Compiled::Freeze freeze{&rule, quantity(rule.quantity, "freeze_out"), {}};
+    Compiled::Freeze freeze{&rule, quantity(rule.quantity, "freeze_out"), nothing()};
     const auto crystals = matter::Formula::parse(rule.crystals, "freeze_out");
     if (!crystals) {
       for (const Problem& problem : crystals.problems()) problems_.push_back(problem);
       return;
     }
-    freeze.per_mol.mol.assign(out_.charge.size(), 0);
     take(freeze.per_mol, *crystals, 1, "freeze_out");
     out_.freezes.push_back(std::move(freeze));
   }
@@ -172,10 +163,10 @@ double factor(const std::vector<double>& factors, std::size_t at) {
 
 }  // namespace
 
-void Amounts::add(const Amounts& other, double times) {
-  if (mol.size() < other.mol.size()) mol.resize(other.mol.size(), 0);
-  for (std::size_t i = 0; i < other.mol.size(); ++i) mol[i] += times * other.mol[i];
-  water_kg += times * other.water_kg;
+void add(Amounts& to, const Amounts& more, double times) {
+  for (std::size_t i = 0; i < more.component_mol.size(); ++i)
+    to.component_mol[i] += times * more.component_mol[i];
+  to.water_kg += times * more.water_kg;
 }
 
 double deposited_mol(const CompiledUse& use, double efficiency_factor) {
@@ -185,12 +176,12 @@ double deposited_mol(const CompiledUse& use, double efficiency_factor) {
 }
 
 Amounts per_unit(const CompiledUse& use, double effects_factor, double efficiency_factor) {
-  Amounts all{std::vector<double>(use.effects.mol.size(), 0), 0};
-  all.add(use.effects, effects_factor);
+  Amounts all{std::vector<double>(use.effects.component_mol.size(), 0), 0};
+  add(all, use.effects, effects_factor);
   if (use.mol_per_unit > 0) {
     const double given_back =
         use.use->counted_in == CountedIn::ampere_hour ? use.mol_per_unit * use.use->anode_efficiency : 0;
-    all.add(use.metal, given_back - deposited_mol(use, efficiency_factor));
+    add(all, use.metal, given_back - deposited_mol(use, efficiency_factor));
   }
   return all;
 }
@@ -201,7 +192,7 @@ Result<Compiled> compile(const bath::Tank& tank, const Chemistry& chemistry, con
 
 Rates rates(const bath::Tank& tank, const Compiled& c, const Policy& policy, const Draw& draw, bool works) {
   Rates r;
-  r.in_per_h.mol.assign(c.charge.size(), 0);
+  r.in_per_h.component_mol.assign(c.charge.size(), 0);
   const double hours = policy.calendar.hours_per_shift;
   const double surface_m2 = tank.surface ? tank.surface->v / 100 : 0;
   std::vector<double> units_per_h(c.uses.size(), 0);
@@ -212,7 +203,7 @@ Rates rates(const bath::Tank& tank, const Compiled& c, const Policy& policy, con
     units_per_h[u] += c.uses[u].use->counted_in == CountedIn::hour ? 1 : surface_m2;
   for (std::size_t u = 0; u < c.uses.size(); ++u) {
     if (units_per_h[u] == 0) continue;
-    r.in_per_h.add(per_unit(c.uses[u], factor(draw.effects, u), factor(draw.efficiency, u)), units_per_h[u]);
+    add(r.in_per_h, per_unit(c.uses[u], factor(draw.effects, u), factor(draw.efficiency, u)), units_per_h[u]);
     r.deposited_mol += units_per_h[u] * deposited_mol(c.uses[u], factor(draw.efficiency, u));
   }
   const double area = works ? policy.area_m2_per_shift.value * draw.area / hours : 0;
@@ -223,12 +214,12 @@ Rates rates(const bath::Tank& tank, const Compiled& c, const Policy& policy, con
   const double evaporation_L =
       works ? policy.evaporation_L_per_h.value * draw.evaporation : policy.idle_evaporation_L_per_h;
   r.top_up_L = std::max(0.0, evaporation_L + r.drag_out_L + r.bleed_L - drag_in_L);
-  r.in_per_h.add(c.drag_in, drag_in_L);
-  r.in_per_h.add(c.water, r.top_up_L * draw.water);
+  add(r.in_per_h, c.drag_in, drag_in_L);
+  add(r.in_per_h, c.water, r.top_up_L * draw.water);
   for (const Compiled::Feed& feed : c.feeds) {
     if (feed.rule->by == Replenishment::By::analysis) continue;
     const double units = feed.rule->by == Replenishment::By::hour ? 1 : units_per_h[feed.use];
-    r.in_per_h.add(feed.per_kg, feed.rule->kg_per_unit * units);
+    add(r.in_per_h, feed.per_kg, feed.rule->kg_per_unit * units);
     r.cost += feed.rule->kg_per_unit * units * feed.price_per_kg;
   }
   return r;
@@ -254,9 +245,9 @@ Outcome advance(bath::TankState& state, const Rates& r, double hours, double vol
   const double weight = kt > 1e-9 ? -std::expm1(-kt) / r.loss_per_h : hours * (1 - kt / 2);
   for (std::size_t i = 0; i < state.component_mol.size(); ++i) {
     const double before = state.component_mol[i];
-    state.component_mol[i] = before * kept + r.in_per_h.mol[i] * weight;
-    moved.in_mol[i] += r.in_per_h.mol[i] * hours;
-    moved.out_mol[i] += before + r.in_per_h.mol[i] * hours - state.component_mol[i];
+    state.component_mol[i] = before * kept + r.in_per_h.component_mol[i] * weight;
+    moved.in_mol[i] += r.in_per_h.component_mol[i] * hours;
+    moved.out_mol[i] += before + r.in_per_h.component_mol[i] * hours - state.component_mol[i];
   }
   return fill(state, volume_L, chemistry);
 }

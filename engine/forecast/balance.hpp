@@ -7,12 +7,10 @@
 namespace bathwright::forecast {
 
 /// mol of each component and kg of water, of anything that goes in or out.
-struct Amounts {
-  std::vector<double> mol;
-  double water_kg = 0;
+using Amounts = bath::Brings;
 
-  void add(const Amounts& other, double times);
-};
+/// Adds `times` of `more`, of the same components.
+void add(Amounts& to, const Amounts& more, double times);
 
 /// One of the bath type's uses in amounts.
 struct CompiledUse {

@@ -15,19 +15,17 @@ using speciation::Equilibrium;
 
 constexpr int days_a_week = 7;
 
-/// Adds water, or takes what stands above the mark, so that what is put in by analysis ends at the mark. The
-/// additions displace water that would have been topped up.
+/// What is put in by analysis, and what it costs.
 struct Adding {
-  const Prepared& p;
   TankState& state;
   Moved& moved;
-  double cost = 0, metal_mol = 0;
+  double cost = 0;
 
   void put(const Compiled::Feed& feed, double kg) {
     if (!(kg > 0)) return;
     for (std::size_t i = 0; i < state.component_mol.size(); ++i) {
-      state.component_mol[i] += kg * feed.per_kg.mol[i];
-      moved.in_mol[i] += kg * feed.per_kg.mol[i];
+      state.component_mol[i] += kg * feed.per_kg.component_mol[i];
+      moved.in_mol[i] += kg * feed.per_kg.component_mol[i];
     }
     state.water_kg += kg * feed.per_kg.water_kg;
     cost += kg * feed.price_per_kg;
@@ -159,8 +157,8 @@ class Runner {
     const double out_mol = held_mol - freeze.rule->left_g_per_L * freeze.rule->litres / M;
     if (!(out_mol > 0)) return;
     for (std::size_t i = 0; i < state_.component_mol.size(); ++i) {
-      state_.component_mol[i] -= out_mol * freeze.per_mol.mol[i];
-      moved_.out_mol[i] += out_mol * freeze.per_mol.mol[i];
+      state_.component_mol[i] -= out_mol * freeze.per_mol.component_mol[i];
+      moved_.out_mol[i] += out_mol * freeze.per_mol.component_mol[i];
     }
     state_.water_kg -= out_mol * freeze.per_mol.water_kg;
   }
@@ -168,7 +166,7 @@ class Runner {
   /// kg of each feed that bring the levels up to their aims at the mark, none negative: one feed after the
   /// other until none moves. The pH is met last, by the acid its equilibrium asks for.
   Outcome additions(int day) {
-    Adding adding{p_, state_, moved_};
+    Adding adding{state_, moved_};
     const double V = p_.tank.working_volume.v;
     constexpr int most_rounds = 40;
     for (int round = 0; round < most_rounds; ++round) {
@@ -178,7 +176,7 @@ class Runner {
         const double M = feed.quantity->formula.molar_mass().v;
         const double missing_mol =
             feed.aim * V / M - p_.chemistry.quantity_mol(*feed.quantity, state_.component_mol);
-        const double per_kg = p_.chemistry.quantity_mol(*feed.quantity, feed.per_kg.mol);
+        const double per_kg = p_.chemistry.quantity_mol(*feed.quantity, feed.per_kg.component_mol);
         if (!(per_kg > 0) || !(missing_mol > 0)) continue;
         adding.put(feed, missing_mol / per_kg);
         moved = std::max(moved, missing_mol * M / (feed.aim * V));
@@ -195,12 +193,12 @@ class Runner {
   }
 
   Outcome meet_pH(const Compiled::Feed& feed, Adding& adding) {
-    const double acid_per_kg = feed.per_kg.mol[0];
+    const double acid_per_kg = feed.per_kg.component_mol[0];
     if (acid_per_kg == 0) return Done{};
     if (auto filled = fill(state_, p_.tank.working_volume.v, p_.chemistry); !filled) return filled;
     constexpr int most_rounds = 6;
     for (int round = 0; round < most_rounds; ++round) {
-      speciation::Task task = task_of(state_);
+      speciation::Task task = bath::task_of(state_);
       task.pH = speciation::HeldPh{feed.aim, p_.chemistry.counter_ion()};
       if (auto solved = holding_.solve(task, held_); !solved) return solved;
       const double kg = held_.held_ph_mol / acid_per_kg;
@@ -210,13 +208,6 @@ class Runner {
     return Done{};
   }
 
-  static speciation::Task task_of(const TankState& state) {
-    speciation::Task task;
-    task.component_mol = state.component_mol;
-    task.water_kg = state.water_kg;
-    return task;
-  }
-
   Outcome record(int day, Run& out) {
     const Chemistry& c = p_.chemistry;
     Day seen;
@@ -224,7 +215,7 @@ class Runner {
     const double V = c.volume_L(state_);
     for (const bath::Quantity& q : c.type().quantities)
       seen.quantity_g_per_L.push_back(c.quantity_mol(q, state_.component_mol) * q.formula.molar_mass().v / V);
-    const speciation::Task task = task_of(state_);
+    const speciation::Task task = bath::task_of(state_);
     if (auto solved = working_.solve_near_last(task, now_); !solved) return solved;
     if (auto solved = idle_.solve_near_last(task, cold_); !solved) return solved;
     seen.pH = now_.pH();

@@ -66,6 +66,9 @@ struct Brings {
   double water_kg = 0;                ///< per unit, crystal water included
 };
 
+/// What is in the tank, as the solver asks for it: nothing precipitates, no pH is held.
+[[nodiscard]] speciation::Task task_of(const TankState& state);
+
 class Chemistry {
  public:
   /// Fails on a component or solid the tables do not know, a temperature outside the bath type's range.

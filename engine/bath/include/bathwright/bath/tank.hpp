@@ -22,6 +22,8 @@ struct ShelfItem {
   enum class Per : std::uint8_t { kilogram, litre } priced_per = Per::kilogram;
   std::optional<double> largest_rise_g_per_L;  ///< overrides the bath type's rule
   std::optional<double> package;               ///< kg or L of one bag or drum
+
+  [[nodiscard]] double price_per_kg() const;
 };
 
 struct Tank {
