@@ -25,7 +25,7 @@ Json json_of(const logbook::Entry& entry, const sheets::Corrections& corrected_b
           {"by", entry.by},
           {"station", entry.station},
           {"program", entry.program},
-          {"corrects", entry.corrects ? Json(*entry.corrects) : Json(nullptr)},
+          {"corrects", entry.kind == logbook::EntryKind::correction ? Json(*entry.about) : Json(nullptr)},
           {"corrected_by", corrections_of(entry, corrected_by)},
           {"body", body.is_discarded() ? Json(entry.body) : body},
           {"hash", entry.hash},
@@ -39,7 +39,7 @@ Result<sheets::Corrections> corrections(const logbook::Logbook& log) {
   if (!entries) return entries.problems();
   sheets::Corrections corrected_by;
   for (const auto& entry : *entries)
-    if (entry.corrects) corrected_by[*entry.corrects].push_back(entry.seq);
+    if (entry.about) corrected_by[*entry.about].push_back(entry.seq);
   return corrected_by;
 }
 
@@ -176,7 +176,7 @@ int correct(const Context& context, std::int64_t seq, const std::string& reason,
   logbook::NewEntry entry;
   entry.kind = logbook::EntryKind::correction;
   entry.tank = wrong->tank;
-  entry.corrects = seq;
+  entry.about = seq;
   Json body{{"reason", reason}};
   if (!note.empty()) body["note"] = note;
   entry.body = body.dump();

@@ -50,12 +50,12 @@ Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry) {
       return Problem{Fault::io, path.parent_path().string(), failure.message(), "a folder for the shift log",
                      "Name a log with --log FILE."};
   }
-  auto log = logbook::Logbook::open(path, logbook::OpenMode::create, wall_clock());
+  auto log = logbook::Logbook::open(path, logbook::OpenMode::create, wall_clock(),
+                                    {.program = program_and_version()});
   if (!log) return log.problems();
   auto opened = std::move(log).value();
   entry.by = signer(context);
   entry.shift = context.shift;
-  entry.program = program_and_version();
   auto logged = opened.append(entry);
   if (!logged) return logged.problems();
   return Logged{*std::move(logged), path, new_log};

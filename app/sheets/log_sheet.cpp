@@ -30,7 +30,7 @@ Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& co
   Table table({{"no.", Align::number}, {"logged (UTC)"}, {"kind"}, {"tank"}, {"shift"}, {"by"}});
   for (const auto& entry : entries) {
     std::string kind(logbook::name(entry.kind));
-    if (entry.corrects) kind += " of " + std::to_string(*entry.corrects);
+    if (entry.about) kind += " of " + std::to_string(*entry.about);
     if (const auto found = corrected_by.find(entry.seq); found != corrected_by.end())
       kind += ", corrected by " + numbers(found->second);
     table.add({std::to_string(entry.seq), to_the_minute(entry.at), kind, entry.tank, entry.shift, entry.by});
@@ -43,7 +43,7 @@ Lines log_entry(const logbook::Entry& entry, std::string_view body) {
   Lines lines;
   title(lines, "Entry " + std::to_string(entry.seq) + ", " + std::string(logbook::name(entry.kind)),
         entry.at);
-  if (entry.corrects) say(lines, "corrects entry " + std::to_string(*entry.corrects));
+  if (entry.about) say(lines, "about entry " + std::to_string(*entry.about));
   lines.push_back("tank     " + entry.tank);
   lines.push_back("shift    " + (entry.shift.empty() ? "not given" : entry.shift));
   lines.push_back("by       " + entry.by + ", at " + entry.station + ", with " + entry.program);

@@ -2,15 +2,16 @@
 
 #include <sodium.h>
 
-#include <array>
+#include <cstdint>
+#include <optional>
 #include <string_view>
+
+#include "hex.hpp"
 
 namespace bathwright::logbook {
 namespace {
 
 constexpr std::size_t hash_bytes = 32;
-constexpr std::string_view format_tag = "bathwright logbook 1";
-
 /// `value` as `Bytes` bytes, the most significant first.
 template <std::size_t Bytes>
 std::string big_endian(std::uint64_t value) {
@@ -29,13 +30,10 @@ class Hasher {
     update(bytes);
   }
 
-  std::string hex() {
-    std::array<unsigned char, hash_bytes> hash{};
-    crypto_generichash_final(&state_, hash.data(), hash.size());
-    std::string text(2 * hash_bytes + 1, '\0');  // sodium ends the text with a zero
-    sodium_bin2hex(text.data(), text.size(), hash.data(), hash.size());
-    text.pop_back();
-    return text;
+  std::string bytes() {
+    std::string hash(hash_bytes, '\0');
+    crypto_generichash_final(&state_, reinterpret_cast<unsigned char*>(hash.data()), hash.size());
+    return hash;
   }
 
  private:
@@ -45,13 +43,14 @@ class Hasher {
   crypto_generichash_state state_;
 };
 
-}  // namespace
+/// A number of an entry, or nothing.
+std::string optional_number(const std::optional<std::int64_t>& number) {
+  return number ? big_endian<8>(static_cast<std::uint64_t>(*number)) : std::string();
+}
 
-std::string first_previous() { return std::string(2 * hash_bytes, '0'); }
-
-std::string chain_hash(const Entry& entry) {
+std::string hash_of_form_1(const Entry& entry) {
   Hasher hasher;
-  hasher.field(format_tag);
+  hasher.field("bathwright logbook 1");
   hasher.field(big_endian<8>(static_cast<std::uint64_t>(entry.seq)));
   hasher.field(name(entry.kind));
   hasher.field(entry.tank);
@@ -60,10 +59,47 @@ std::string chain_hash(const Entry& entry) {
   hasher.field(entry.station);
   hasher.field(entry.by);
   hasher.field(entry.body);
-  hasher.field(entry.corrects ? big_endian<8>(static_cast<std::uint64_t>(*entry.corrects)) : "");
+  hasher.field(optional_number(entry.about));
   hasher.field(entry.program);
   hasher.field(entry.previous);
-  return hasher.hex();
+  return hex(hasher.bytes());
+}
+
+}  // namespace
+
+std::string first_previous() { return std::string(2 * hash_bytes, '0'); }
+
+std::string content_digest(const Entry& entry) {
+  Hasher hasher;
+  hasher.field("bathwright logbook 2");
+  hasher.field(big_endian<8>(static_cast<std::uint64_t>(entry.seq)));
+  hasher.field(name(entry.kind));
+  hasher.field(entry.tank);
+  hasher.field(entry.shift);
+  hasher.field(entry.at);
+  hasher.field(entry.happened);
+  hasher.field(entry.uptime.boot);
+  hasher.field(big_endian<8>(static_cast<std::uint64_t>(entry.uptime.since.count())));
+  hasher.field(entry.station);
+  hasher.field(entry.by);
+  hasher.field(entry.role);
+  hasher.field(entry.witness);
+  hasher.field(entry.body);
+  hasher.field(optional_number(entry.about));
+  hasher.field(entry.program);
+  hasher.field(entry.bath_type);
+  hasher.field(entry.previous);
+  return hasher.bytes();
+}
+
+std::string chain_hash(const Entry& entry) {
+  if (entry.form == 1) return hash_of_form_1(entry);
+  Hasher hasher;
+  hasher.field("bathwright logbook 2, link");
+  hasher.field(content_digest(entry));
+  hasher.field(entry.signature);
+  hasher.field(entry.witness_signature);
+  return hex(hasher.bytes());
 }
 
 }  // namespace bathwright::logbook

@@ -105,9 +105,10 @@ std::optional<std::int64_t> Statement::optional_integer(int column) const {
   return integer(column);
 }
 
-std::string Statement::text(int column) const {
+std::string_view Statement::view(int column) const {
   const auto* data = reinterpret_cast<const char*>(sqlite3_column_text(handle_.get(), column));
-  return data ? std::string(data, static_cast<std::size_t>(sqlite3_column_bytes(handle_.get(), column))) : "";
+  if (!data) return {};
+  return {data, static_cast<std::size_t>(sqlite3_column_bytes(handle_.get(), column))};
 }
 
 Database::Database(sqlite3* connection, std::string name, std::chrono::milliseconds wait)
@@ -145,6 +146,17 @@ Database Database::in_memory() {
   sqlite3* connection = nullptr;
   sqlite3_open(":memory:", &connection);
   return Database(connection, ":memory:", {});
+}
+
+Result<Database> Database::copied_to_memory() const {
+  Database copy = in_memory();
+  copy.name_ = name_;
+  constexpr int all_pages = -1;
+  sqlite3_backup* backup = sqlite3_backup_init(copy.connection_.get(), "main", connection_.get(), "main");
+  if (!backup) return copy.problem();
+  sqlite3_backup_step(backup, all_pages);
+  if (sqlite3_backup_finish(backup) != SQLITE_OK) return copy.problem();
+  return copy;
 }
 
 Outcome Database::execute(const char* sql) const {

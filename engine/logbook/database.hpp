@@ -33,7 +33,8 @@ class Statement {
   /// Columns count from 0.
   std::int64_t integer(int column) const;
   std::optional<std::int64_t> optional_integer(int column) const;
-  std::string text(int column) const;
+  std::string_view view(int column) const;  ///< until the next step
+  std::string text(int column) const { return std::string(view(column)); }
 
  private:
   struct Finalize {
@@ -52,6 +53,9 @@ class Database {
 
   /// An empty database that is gone with this object.
   static Database in_memory();
+
+  /// What it holds, in memory, under the same name.
+  Result<Database> copied_to_memory() const;
 
   Statement prepare(std::string_view sql) const { return Statement(connection_.get(), sql); }
 

@@ -7,6 +7,8 @@
 #include <optional>
 #include <string>
 
+#include "roll.hpp"
+
 namespace bathwright::logbook {
 namespace {
 
@@ -37,6 +39,16 @@ Problem bad(std::string_view field, std::string what, std::string expected, std:
   return {Fault::bad_input, std::string(field), std::move(what), std::move(expected), std::move(try_this)};
 }
 
+bool is_about_a_tank(EntryKind kind) {
+  return kind != EntryKind::hand_over && kind != EntryKind::person && kind != EntryKind::setting &&
+         kind != EntryKind::failed_pin;
+}
+
+bool has_text(const nlohmann::json& json, const char* key) {
+  return json.is_object() && json.contains(key) && json[key].is_string() &&
+         !json[key].get_ref<const std::string&>().empty();
+}
+
 void check_body(const NewEntry& entry, Problems& problems) {
   const std::string& body = entry.body;
   if (body.size() > max_body_bytes) {
@@ -49,23 +61,47 @@ void check_body(const NewEntry& entry, Problems& problems) {
     problems.push_back(bad("body", "not valid JSON", "one JSON value in UTF-8"));
     return;
   }
-  if (entry.kind != EntryKind::correction) return;
   const auto json = nlohmann::json::parse(body);
-  const auto reason = json.find("reason");
-  if (!json.is_object() || reason == json.end() || !reason->is_string() ||
-      reason->get_ref<const std::string&>().empty())
+  if (entry.kind == EntryKind::correction && !has_text(json, "reason"))
     problems.push_back(bad("body", "a correction without a reason", "the key \"reason\" with a text",
                            "say why the earlier entry is wrong"));
+  if (entry.kind == EntryKind::person || entry.kind == EntryKind::setting) {
+    Entry told;
+    told.kind = entry.kind;
+    told.body = body;
+    if (const auto understood = Roll().take(told); !understood)
+      problems.insert(problems.end(), understood.problems().begin(), understood.problems().end());
+  }
+  if (entry.kind != EntryKind::slip_closed) return;
+  const bool done = has_text(json, "outcome") && json["outcome"] == "done";
+  const bool cancelled = has_text(json, "outcome") && json["outcome"] == "cancelled";
+  if (!done && !cancelled)
+    problems.push_back(bad("body", "a slip closed without saying how",
+                           "the key \"outcome\" with \"done\" or \"cancelled\""));
+  if (cancelled && !has_text(json, "reason"))
+    problems.push_back(
+        bad("body", "a slip cancelled without a reason", "the key \"reason\" with a text", "say why"));
 }
 
-void check_corrects(const NewEntry& entry, Problems& problems) {
-  if (entry.kind == EntryKind::correction && !entry.corrects)
-    problems.push_back(
-        bad("corrects", "a correction that names no entry", "the number of the entry it corrects"));
-  if (entry.kind != EntryKind::correction && entry.corrects)
-    problems.push_back(bad(
-        "corrects", fmt::format("entry {} named by an entry of kind {}", *entry.corrects, name(entry.kind)),
-        "nothing here", "log it as a correction"));
+/// Which kinds answer an earlier entry.
+void check_about(const NewEntry& entry, Problems& problems) {
+  switch (entry.kind) {
+    case EntryKind::correction:
+      if (!entry.about)
+        problems.push_back(
+            bad("about", "a correction that names no entry", "the number of the entry it corrects"));
+      break;
+    case EntryKind::slip_closed:
+      if (!entry.about) problems.push_back(bad("about", "no slip named", "the number of the slip it closes"));
+      break;
+    case EntryKind::addition:
+      break;
+    default:
+      if (entry.about)
+        problems.push_back(
+            bad("about", fmt::format("entry {} named by an entry of kind {}", *entry.about, name(entry.kind)),
+                "nothing here", "log it as a correction"));
+  }
 }
 
 }  // namespace
@@ -91,12 +127,13 @@ void check_text(std::string_view field, std::string_view text, Presence presence
 
 Problems check(const NewEntry& entry) {
   Problems problems;
-  check_text("tank", entry.tank, Presence::required, problems);
+  check_text("tank", entry.tank, is_about_a_tank(entry.kind) ? Presence::required : Presence::optional,
+             problems);
   check_text("shift", entry.shift, Presence::optional, problems);
   check_text("by", entry.by, Presence::required, problems);
   check_body(entry, problems);
-  check_corrects(entry, problems);
-  check_text("program", entry.program, Presence::optional, problems);
+  check_about(entry, problems);
+  check_text("bath_type", entry.bath_type, Presence::optional, problems);
   return problems;
 }
 

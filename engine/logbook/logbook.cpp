@@ -1,78 +1,40 @@
+// Opening a log and writing into it. What it answers is in queries.cpp, who may write in people.cpp.
 #include "bathwright/logbook/logbook.hpp"
 
 #include <fmt/format.h>
-#include <fmt/ranges.h>
 #include <sodium.h>
 
 #include <utility>
-#include <variant>
 
 #include "chain.hpp"
-#include "database.hpp"
 #include "entry_rules.hpp"
+#include "logbook_state.hpp"
 #include "schema.hpp"
 #include "stored_entry.hpp"
-#include "verify.hpp"
 
 namespace bathwright::logbook {
-
-struct Logbook::State {
-  Database database;
-  OpenMode mode;
-  const Clock& clock;
-  std::string station;
-
-  Result<std::optional<Entry>> last() const { return first_of("ORDER BY seq DESC LIMIT 1", {}); }
-  Result<std::optional<Entry>> with_seq(std::int64_t seq) const { return first_of("WHERE seq = ?", {seq}); }
-
-  using Value = std::variant<std::int64_t, std::string>;
-  Result<std::vector<Entry>> all_of(std::string_view clauses, const std::vector<Value>& values) const {
-    Statement rows = database.prepare(select_entries(clauses));
-    for (int parameter = 1; const Value& value : values)
-      std::visit([&](const auto& v) { rows.bind(parameter++, v); }, value);
-    std::vector<Entry> entries;
-    while (rows.step()) {
-      auto entry = read_entry(rows);
-      if (!entry) return entry.problems();
-      entries.push_back(*std::move(entry));
-    }
-    if (rows.failed()) return database.problem();
-    return entries;
-  }
-
-  Result<std::optional<Entry>> first_of(std::string_view clauses, const std::vector<Value>& values) const {
-    auto entries = all_of(clauses, values);
-    if (!entries) return entries.problems();
-    if (entries->empty()) return std::optional<Entry>();
-    return std::optional<Entry>(entries->front());
-  }
-
-  /// A correction must name an entry of its own tank.
-  Outcome check_corrected(const NewEntry& correction) const {
-    const auto corrected = with_seq(*correction.corrects);
-    if (!corrected) return corrected.problems();
-    if (!*corrected)
-      return Problem{Fault::bad_input, "corrects", fmt::format("there is no entry {}", *correction.corrects),
-                     "the number of an entry in this log", "list the tank's entries to find it"};
-    const Entry& entry = **corrected;
-    if (entry.tank != correction.tank)
-      return Problem{Fault::bad_input, "corrects",
-                     fmt::format("entry {} is of tank {}", entry.seq, entry.tank),
-                     "an entry of tank " + correction.tank, "check the number"};
-    return Done{};
-  }
-};
-
 namespace {
 
-/// `text` as a LIKE pattern that finds it anywhere, its own wildcards taken literally (escaped by '!').
-std::string anywhere(std::string_view text) {
-  std::string pattern = "%";
-  for (const char c : text) {
-    if (c == '%' || c == '_' || c == '!') pattern += '!';
-    pattern += c;
-  }
-  return pattern + '%';
+/// What an entry answers must be there, be of its tank, and be something such an entry answers.
+Outcome check_answered(const NewEntry& entry, const std::optional<Entry>& answered,
+                       const std::vector<Entry>& open_slips) {
+  const auto problem = [&](std::string what, std::string expected, std::string try_this) {
+    return Problem{Fault::bad_input, "about", std::move(what), std::move(expected), std::move(try_this)};
+  };
+  if (!answered)
+    return problem(fmt::format("there is no entry {}", *entry.about), "the number of an entry in this log",
+                   "list the tank's entries to find it");
+  if (answered->tank != entry.tank)
+    return problem(fmt::format("entry {} is of tank {}", answered->seq, answered->tank),
+                   "an entry of tank " + entry.tank, "check the number");
+  if (entry.kind == EntryKind::correction) return Done{};
+  if (answered->kind != EntryKind::slip)
+    return problem(fmt::format("entry {} is no slip but {}", answered->seq, name(answered->kind)), "a slip",
+                   "check the number");
+  for (const Entry& slip : open_slips)
+    if (slip.seq == answered->seq) return Done{};
+  return problem(fmt::format("slip {} is closed", answered->seq), "an open slip",
+                 "log what was added beside it without naming the slip");
 }
 
 }  // namespace
@@ -86,82 +48,114 @@ Result<Logbook> Logbook::open(const std::filesystem::path& path, OpenMode mode, 
                               const OpenSettings& settings) {
   Problems problems;
   check_text("station", settings.station, Presence::required, problems);
+  check_text("program", settings.program, Presence::optional, problems);
   if (!problems.empty()) return problems;
   if (sodium_init() < 0)
     return Problem{Fault::io, path.string(), "the library for the hash chain does not start", "",
                    "reinstall libsodium"};
-  auto database = Database::open(path, mode, settings.wait);
-  if (!database) return database.problems();
-  if (auto ready = prepare_schema(*database, mode); !ready) return ready.problems();
-  return Logbook(std::unique_ptr<State>(new State{*std::move(database), mode, clock, settings.station}));
+  auto opened = Database::open(path, mode, settings.wait);
+  if (!opened) return opened.problems();
+  Database database = *std::move(opened);
+  if (auto ready = prepare_schema(database, mode); !ready) return ready.problems();
+  return Logbook(std::unique_ptr<State>(new State{std::move(database), mode, clock, settings}));
 }
 
-Result<Entry> Logbook::append(const NewEntry& entry) {
-  const Database& database = state_->database;
-  if (state_->mode == OpenMode::read_only)
-    return Problem{Fault::refused, database.name(), "the logbook is open for reading only", "",
-                   "open it for writing to log an entry"};
-  if (auto problems = check(entry); !problems.empty()) return problems;
+Outcome Logbook::State::writable() const {
+  if (mode != OpenMode::read_only) return Done{};
+  return Problem{Fault::refused, database.name(), "the logbook is open for reading only", "",
+                 "open it for writing to log an entry"};
+}
 
-  WriteTransaction transaction(database);
+Entry Logbook::State::entry_of(const NewEntry& entry, const std::optional<Entry>& last) const {
+  Entry made;
+  made.seq = last ? last->seq + 1 : 1;
+  made.kind = entry.kind;
+  made.tank = entry.tank;
+  made.shift = entry.shift;
+  made.at = iso_utc(clock.utc_now());
+  made.happened = entry.happened ? iso_utc(*entry.happened) : "";
+  made.uptime = clock.uptime();
+  made.station = settings.station;
+  made.by = entry.by;
+  made.body = entry.body;
+  made.about = entry.about;
+  made.program = settings.program;
+  made.bath_type = entry.bath_type;
+  made.previous = last ? last->hash : first_previous();
+  return made;
+}
+
+Result<Entry> Logbook::append(const NewEntry& given, const Signatures& signatures) {
+  if (auto may = state_->writable(); !may) return may.problems();
+  NewEntry entry = given;
+  if (entry.by.empty() && signatures.by) entry.by = signatures.by->name;
+  if (auto problems = check(entry); !problems.empty()) return problems;
+  if (entry.kind == EntryKind::failed_pin)
+    return Problem{Fault::refused, "kind", "only the log itself writes of failed PINs", "another kind", ""};
+  // Before the write lock is taken: making a key of a PIN takes its time.
+  const auto keys = state_->check_pins(entry, signatures);
+  if (!keys) return keys.problems();
+
+  WriteTransaction transaction(state_->database);
   if (auto begun = transaction.begin(); !begun) return begun.problems();
-  if (entry.corrects)
-    if (auto fits = state_->check_corrected(entry); !fits) return fits.problems();
   const auto last = state_->last();
   if (!last) return last.problems();
+  const auto roll = state_->roll();
+  if (!roll) return roll.problems();
+  if (entry.about || entry.kind == EntryKind::slip) {
+    const auto open = state_->open_slips(entry.tank);
+    if (!open) return open.problems();
+    if (entry.kind == EntryKind::slip && !open->empty())
+      return Problem{
+          Fault::refused, "slip",
+          fmt::format("slip {} of tank {} is still open: what it orders may be in the tank already",
+                      open->back().seq, entry.tank),
+          "no open slip of the tank",
+          "find out whether it was carried out, close or cancel it, then analyse again"};
+    if (entry.about) {
+      const auto answered = state_->with_seq(*entry.about);
+      if (!answered) return answered.problems();
+      if (auto fits = check_answered(entry, *answered, *open); !fits) return fits.problems();
+    }
+  }
 
-  Entry logged{.seq = *last ? (*last)->seq + 1 : 1,
-               .kind = entry.kind,
-               .tank = entry.tank,
-               .shift = entry.shift,
-               .at = iso_utc(state_->clock.utc_now()),
-               .station = state_->station,
-               .by = entry.by,
-               .body = entry.body,
-               .corrects = entry.corrects,
-               .program = entry.program,
-               .previous = *last ? (*last)->hash : first_previous(),
-               .hash = {}};
+  Entry logged = state_->entry_of(entry, *last);
+  if (auto done = State::sign(logged, *keys, *roll); !done) return done.problems();
   logged.hash = chain_hash(logged);
-  if (auto inserted = insert_entry(database, logged); !inserted) return inserted.problems();
+  if (auto inserted = insert_entry(state_->database, logged); !inserted) return inserted.problems();
   if (auto committed = transaction.commit(); !committed) return committed.problems();
   return logged;
 }
 
-Result<std::vector<Entry>> Logbook::list(const Filter& filter) const {
-  std::vector<std::string> conditions{"TRUE"};
-  std::vector<State::Value> values;
-  const auto restrict = [&](const char* condition, State::Value value) {
-    conditions.emplace_back(condition);
-    values.push_back(std::move(value));
+Result<std::int64_t> Logbook::take_over(const std::vector<Entry>& entries) {
+  if (auto may = state_->writable(); !may) return may.problems();
+  WriteTransaction transaction(state_->database);
+  if (auto begun = transaction.begin(); !begun) return begun.problems();
+  const auto last = state_->last();
+  if (!last) return last.problems();
+  std::int64_t seq = *last ? (*last)->seq : 0, taken = 0;
+  std::string head = *last ? (*last)->hash : first_previous();
+  const auto problem = [&](const Entry& entry, std::string what) {
+    return Problem{Fault::inconsistent_data, fmt::format("entry {}", entry.seq), std::move(what),
+                   "an entry that carries the chain on", "verify both copies; nothing was taken over"};
   };
-  if (!filter.tank.empty()) restrict("tank = ?", filter.tank);
-  if (filter.kind) restrict("kind = ?", std::string(name(*filter.kind)));
-  if (filter.from) restrict("at >= ?", iso_utc(*filter.from));
-  if (filter.to) restrict("at < ?", iso_utc(*filter.to));
-  if (!filter.text.empty())
-    restrict(R"(body || char(10) || "by" || char(10) || shift LIKE ? ESCAPE '!')", anywhere(filter.text));
-  if (filter.after_seq != 0) restrict(filter.newest_first ? "seq < ?" : "seq > ?", filter.after_seq);
-  std::string clauses = fmt::format("WHERE {} ORDER BY seq {}", fmt::join(conditions, " AND "),
-                                    filter.newest_first ? "DESC" : "ASC");
-  if (filter.limit != 0) clauses += fmt::format(" LIMIT {}", filter.limit);
-  return state_->all_of(clauses, values);
+  for (const Entry& entry : entries) {
+    if (entry.seq <= seq) {
+      const auto ours = state_->with_seq(entry.seq);
+      if (!ours) return ours.problems();
+      if (!*ours || (*ours)->hash != entry.hash)
+        return problem(entry, "this log has another entry of that number: two copies of it went on apart");
+      continue;
+    }
+    if (entry.seq != seq + 1 || entry.previous != head) return problem(entry, "it does not follow this log");
+    if (chain_hash(entry) != entry.hash) return problem(entry, "it is not as it was logged");
+    if (auto inserted = insert_entry(state_->database, entry); !inserted) return inserted.problems();
+    seq = entry.seq;
+    head = entry.hash;
+    ++taken;
+  }
+  if (auto committed = transaction.commit(); !committed) return committed.problems();
+  return taken;
 }
-
-Result<Entry> Logbook::find(std::int64_t seq) const {
-  auto found = state_->with_seq(seq);
-  if (!found) return found.problems();
-  if (!*found)
-    return Problem{Fault::bad_input, state_->database.name(), fmt::format("there is no entry {}", seq), "",
-                   "list the entries to find its number"};
-  return **std::move(found);
-}
-
-Result<std::optional<Entry>> Logbook::latest(const std::string& tank, EntryKind kind) const {
-  return state_->first_of("WHERE tank = ? AND kind = ? ORDER BY seq DESC LIMIT 1",
-                          {tank, std::string(name(kind))});
-}
-
-Verification Logbook::verify() const { return verify_chain(state_->database); }
 
 }  // namespace bathwright::logbook

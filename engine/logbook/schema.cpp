@@ -4,42 +4,14 @@
 
 #include <cassert>
 #include <map>
+#include <utility>
+
+#include "migrations.hpp"
 
 namespace bathwright::logbook {
 namespace {
 
 constexpr std::int64_t application_id = 0x4257'4C42;  // "BWLB"
-constexpr std::int64_t schema_version = 1;
-
-constexpr const char* schema_sql = R"sql(
-CREATE TABLE entry (
-  seq      INTEGER PRIMARY KEY CHECK (seq >= 1),
-  kind     TEXT NOT NULL,
-  tank     TEXT NOT NULL,
-  shift    TEXT NOT NULL,
-  at       TEXT NOT NULL,
-  station  TEXT NOT NULL,
-  "by"     TEXT NOT NULL,
-  body     TEXT NOT NULL,
-  corrects INTEGER REFERENCES entry (seq),
-  program  TEXT NOT NULL,
-  previous TEXT NOT NULL,
-  hash     TEXT NOT NULL UNIQUE
-) STRICT;
-CREATE INDEX entry_by_tank ON entry (tank, kind, seq);
-CREATE TRIGGER entry_no_update BEFORE UPDATE ON entry
-  BEGIN SELECT RAISE(ABORT, 'log entries are never changed; add a correction'); END;
-CREATE TRIGGER entry_no_delete BEFORE DELETE ON entry
-  BEGIN SELECT RAISE(ABORT, 'log entries are never deleted; add a correction'); END;
--- INSERT OR REPLACE passes by the delete trigger, hence a trigger of its own
-CREATE TRIGGER entry_no_replace BEFORE INSERT ON entry
-  WHEN EXISTS (SELECT 1 FROM entry WHERE seq = NEW.seq OR hash = NEW.hash)
-  BEGIN SELECT RAISE(ABORT, 'log entries are never replaced; add a correction'); END;
-CREATE TRIGGER entry_in_order BEFORE INSERT ON entry
-  WHEN NEW.seq IS NOT (SELECT coalesce(max(seq), 0) + 1 FROM entry)
-  BEGIN SELECT RAISE(ABORT, 'log entries are numbered without gaps'); END;
-)sql";
-
 struct Identity {
   std::int64_t application = 0, version = 0, objects = 0;
   bool empty() const { return application == 0 && version == 0 && objects == 0; }
@@ -53,15 +25,22 @@ Result<Identity> identify(const Database& database) {
   return Identity{query.integer(0), query.integer(1), query.integer(2)};
 }
 
-Outcome make_tables(const Database& database) {
+/// Runs the steps from `version` on.
+Outcome take_steps_from(const Database& database, std::int64_t version) {
+  for (auto step = static_cast<std::size_t>(version); step < migrations.size(); ++step)
+    if (auto taken = database.execute(migrations[step]); !taken) return taken;
+  return Done{};
+}
+
+/// Makes or brings up the tables in one transaction: a program that dies half-way leaves them as they were.
+Outcome bring_up_to_date(const Database& database) {
   WriteTransaction transaction(database);
   if (auto begun = transaction.begin(); !begun) return begun;
-  const auto identity = identify(database);
+  const auto identity = identify(database);  // another program may have been quicker
   if (!identity) return identity.problems();
-  if (!identity->empty()) return Done{};  // another program was quicker
+  if (auto taken = take_steps_from(database, identity->version); !taken) return taken;
   const std::string stamp =
       fmt::format("PRAGMA application_id = {}; PRAGMA user_version = {}", application_id, schema_version);
-  if (auto made = database.execute(schema_sql); !made) return made;
   if (auto stamped = database.execute(stamp.c_str()); !stamped) return stamped;
   return transaction.commit();
 }
@@ -86,36 +65,45 @@ Result<SchemaObjects> schema_objects(const Database& database) {
 }
 
 /// What SQLite itself makes of our SQL, so that there is no second list to keep.
-SchemaObjects expected_objects() {
-  const Database reference = Database::in_memory();
-  [[maybe_unused]] const auto made = reference.execute(schema_sql);
-  assert(made);
-  return schema_objects(reference).value();
+const SchemaObjects& expected_objects() {
+  static const SchemaObjects expected = [] {
+    const Database reference = Database::in_memory();
+    [[maybe_unused]] const auto made = take_steps_from(reference, 0);
+    assert(made);
+    return schema_objects(reference).value();
+  }();
+  return expected;
 }
 
 }  // namespace
 
-Outcome prepare_schema(const Database& database, OpenMode mode) {
-  auto identity = identify(database);
-  if (identity && identity->empty() && mode == OpenMode::create) {
-    if (auto made = make_tables(database); !made) return made;
-    identity = identify(database);
-  }
+Outcome prepare_schema(Database& database, OpenMode mode) {
+  const auto identity = identify(database);
   if (!identity) return identity.problems();
-  if (identity->empty())
+  if (identity->empty() && mode != OpenMode::create)
     return Problem{Fault::bad_input, database.name(), "the file is empty", "a logbook file",
                    "check the path, or start a new logbook there"};
-  if (identity->application != application_id)
+  if (!identity->empty() && identity->application != application_id)
     return Problem{Fault::bad_input, database.name(), "this is a database of another program",
                    "a logbook file", "check the path"};
-  if (identity->version != schema_version)
+  const bool ours = identity->empty() || identity->version >= 1;
+  if (!ours || identity->version > schema_version)
     return Problem{Fault::refused, database.name(),
                    fmt::format("the logbook has format version {}", identity->version),
-                   fmt::format("version {}", schema_version),
-                   identity->version > schema_version
-                       ? "it was written by a newer program: update this one"
-                       : "the file's heading is damaged: go on with the last good backup"};
-  return mode == OpenMode::read_only ? Outcome(Done{}) : use_write_ahead_log(database);
+                   fmt::format("version 1 to {}", schema_version),
+                   ours ? "it was written by a newer program: update this one"
+                        : "the file's heading is damaged: go on with the last good backup"};
+  if (mode == OpenMode::read_only) {
+    if (identity->version == schema_version) return Done{};
+    // The file stays as it is; a copy of it is brought up to date and read.
+    auto copy = database.copied_to_memory();
+    if (!copy) return copy.problems();
+    database = *std::move(copy);
+    return bring_up_to_date(database);
+  }
+  if (identity->version < schema_version)
+    if (auto brought = bring_up_to_date(database); !brought) return brought;
+  return use_write_ahead_log(database);
 }
 
 void check_guards(const Database& database, std::vector<Finding>& findings) {
@@ -124,7 +112,7 @@ void check_guards(const Database& database, std::vector<Finding>& findings) {
     findings.push_back({FindingKind::unreadable, 0, found.problems().front().text()});
     return;
   }
-  const auto expected = expected_objects();
+  const SchemaObjects& expected = expected_objects();
   for (const auto& [object, sql] : expected) {
     const auto same = found->find(object);
     if (same == found->end())

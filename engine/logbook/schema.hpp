@@ -9,9 +9,10 @@
 
 namespace bathwright::logbook {
 
-/// Makes sure the file holds a log of the version this program knows; makes the tables in an empty file in
-/// mode create. Any other file is left as it is and answered with a problem.
-[[nodiscard]] Outcome prepare_schema(const Database& database, OpenMode mode);
+/// Makes sure the database is a log of this program's version: makes the tables in an empty file in mode
+/// create and brings up those of an earlier version. In mode read_only it is a copy in memory that is brought
+/// up. Any other file is left as it is and answered with a problem.
+[[nodiscard]] Outcome prepare_schema(Database& database, OpenMode mode);
 
 /// Adds a finding for each table, index or trigger that is missing, altered or foreign.
 void check_guards(const Database& database, std::vector<Finding>& findings);

@@ -11,7 +11,29 @@ namespace bathwright::logbook {
 
 /// The columns in the order of select_entries, counted from 0.
 namespace column {
-enum : int { seq, kind, tank, shift, at, station, by, body, corrects, program, previous, hash };
+enum : int {
+  form,
+  seq,
+  kind,
+  tank,
+  shift,
+  at,
+  happened,
+  boot,
+  uptime_ms,
+  station,
+  by,
+  role,
+  witness,
+  body,
+  about,
+  program,
+  bath_type,
+  previous,
+  signature,
+  witness_signature,
+  hash
+};
 }
 
 /// "SELECT every column FROM entry " with `rest` behind it.

@@ -2,10 +2,14 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <utility>
 
 #include "chain.hpp"
+#include "migrations.hpp"
+#include "roll.hpp"
 #include "schema.hpp"
+#include "signature_checks.hpp"
 #include "stored_entry.hpp"
 
 namespace bathwright::logbook {
@@ -28,6 +32,7 @@ class Walk {
   void all() {
     Statement rows = database_.prepare(select_entries("ORDER BY seq"));
     while (rows.step()) visit(rows);
+    signatures_.finish();
     if (rows.failed()) find(FindingKind::unreadable, last_seq_, database_.problem().text());
     report_.head = last_hash_;
   }
@@ -44,6 +49,8 @@ class Walk {
       return;
     }
     const bool in_sequence = check_sequence(entry->seq);
+    check_form(*entry);
+    check_signers(*entry);
     if (chain_hash(*entry) != entry->hash)
       find(FindingKind::changed, entry->seq, fmt::format("entry {} is not as it was logged", entry->seq));
     if (in_sequence && entry->previous != last_hash_) report_broken_link(*entry);
@@ -52,6 +59,44 @@ class Walk {
                                      fmt::format("entry {} is dated {}, before the {} of entry {}",
                                                  entry->seq, entry->at, last_at_, last_seq_)});
     pass(entry->seq, entry->hash, entry->at);
+  }
+
+  /// The hash of form 1 does not cover the columns of later versions, so it must not come back.
+  void check_form(const Entry& entry) {
+    const Entry blank;
+    const bool old = entry.form == 1;
+    if (entry.form < 1 || entry.form > schema_version)
+      find(FindingKind::changed, entry.seq,
+           fmt::format("entry {} is marked as of form {}, which there is not", entry.seq, entry.form));
+    else if (old && (last_form_ > 1 || !entry.happened.empty() || entry.uptime != blank.uptime ||
+                     !entry.role.empty() || !entry.witness.empty() || !entry.bath_type.empty() ||
+                     !entry.signature.empty() || !entry.witness_signature.empty()))
+      find(FindingKind::changed, entry.seq,
+           fmt::format("entry {} is marked as of an earlier form than it can be", entry.seq));
+    last_form_ = entry.form;
+  }
+
+  /// That everyone it names may have written it and did sign it. The roll is that of the entries before.
+  void check_signers(const Entry& entry) {
+    if (const auto refusal = roll_.refusal(entry))
+      find(FindingKind::signature, entry.seq,
+           fmt::format("entry {} could not have been written: {}", entry.seq, refusal->what));
+    const bool first_person = entry.kind == EntryKind::person && roll_.people().empty();
+    const std::string witness_key = key_of(entry.witness);
+    std::string by_key = key_of(entry.by);
+    (void)roll_.take(entry);  // a body that tells nobody was refused above
+    if (first_person) by_key = key_of(entry.by);
+
+    const std::string digest = content_digest(entry);
+    if (first_person || !entry.role.empty() || !entry.signature.empty())
+      signatures_.check({entry.seq, by_key, digest, entry.signature});
+    if (!entry.witness.empty() || !entry.witness_signature.empty())
+      signatures_.check({entry.seq, witness_key, digest, entry.witness_signature});
+  }
+
+  std::string key_of(const std::string& name) const {
+    const Person* person = roll_.person(name);
+    return person ? person->key : "";
   }
 
   /// True when `seq` is the one that comes next.
@@ -93,14 +138,37 @@ class Walk {
 
   const Database& database_;
   Verification& report_;
+  Roll roll_;
+  SignatureChecks signatures_{[this](std::int64_t seq) {
+    find(FindingKind::signature, seq, fmt::format("entry {} is not signed by whom it names", seq));
+  }};
+  std::int64_t last_form_ = 1;
   std::int64_t last_seq_ = 0;
   std::string last_hash_ = first_previous();
   std::string last_at_;
 };
 
+/// Each anchor must be the hash of an entry, and of the one it was noted of.
+void check_anchors(const Database& database, const std::vector<Anchor>& anchors,
+                   std::vector<Finding>& findings) {
+  for (const Anchor& anchor : anchors) {
+    Statement found = database.prepare("SELECT seq FROM entry WHERE hash = ?");
+    found.bind(1, anchor.hash);
+    if (!found.step())
+      findings.push_back(
+          {FindingKind::cut, anchor.seq,
+           fmt::format("the entry{} noted with hash {} is not in the log: the end was cut off or "
+                       "rewritten, or it is another log's",
+                       anchor.seq > 0 ? fmt::format(" {}", anchor.seq) : "", anchor.hash)});
+    else if (anchor.seq > 0 && found.integer(0) != anchor.seq)
+      findings.push_back({FindingKind::cut, anchor.seq,
+                          fmt::format("the entry noted as {} stands as {}", anchor.seq, found.integer(0))});
+  }
+}
+
 }  // namespace
 
-Verification verify_chain(const Database& database) {
+Verification verify_chain(const Database& database, const std::vector<Anchor>& anchors) {
   Verification report;
   // One read transaction: entries logged meanwhile by others are left for the next time.
   if (const auto begun = database.execute("BEGIN"); !begun)
@@ -108,6 +176,8 @@ Verification verify_chain(const Database& database) {
   check_file(database, report.problems);
   check_guards(database, report.problems);
   Walk(database, report).all();
+  check_anchors(database, anchors, report.problems);
+  std::ranges::stable_sort(report.problems, {}, &Finding::seq);
   (void)database.execute("COMMIT");
   report.ok = report.problems.empty();
   return report;

@@ -6,6 +6,6 @@
 
 namespace bathwright::logbook {
 
-[[nodiscard]] Verification verify_chain(const Database& database);
+[[nodiscard]] Verification verify_chain(const Database& database, const std::vector<Anchor>& anchors);
 
 }  // namespace bathwright::logbook

@@ -19,7 +19,7 @@ Logbook filled(const std::filesystem::path& path, HeldClock& clock) {
         Row{EntryKind::analysis, "nickel-1", "day", "J. Lindqvist", R"({"Ni^2+":"71 g/L"})"},
         Row{EntryKind::note, "zinc-2", "day", "J. Lindqvist", R"({"text":"1000 parts"})"},
         Row{EntryKind::ampere_hours, "zinc-2", "late", "S. Brandt", R"({"Ah":1250})"}}) {
-    must(log.append({row.kind, row.tank, row.shift, row.by, row.body, {}, ""}));
+    must(log.append({row.kind, row.tank, row.shift, row.by, row.body}));
     clock.now += std::chrono::hours(1);
   }
   return log;
@@ -54,8 +54,7 @@ TEST_CASE("an entry comes back as it was logged, also after the file was closed"
   CHECK(logged.station == "line-a");
   CHECK(logged.by == entry.by);
   CHECK(logged.body == entry.body);
-  CHECK_FALSE(logged.corrects);
-  CHECK(logged.program == entry.program);
+  CHECK_FALSE(logged.about);
   CHECK(logged.previous == std::string(64, '0'));
 
   auto log = must(Logbook::open(folder / "shop.log", OpenMode::read_write, clock));
@@ -63,7 +62,7 @@ TEST_CASE("an entry comes back as it was logged, also after the file was closed"
   const Entry next = must(log.append(correction(1)));
   CHECK(next.seq == 2);
   CHECK(next.previous == logged.hash);
-  CHECK(next.corrects == 1);
+  CHECK(next.about == 1);
   CHECK(must(log.find(2)) == next);
 }
 
@@ -115,7 +114,7 @@ TEST_CASE("find and latest", "[unit][logbook]") {
 }
 
 TEST_CASE("kinds have names, and a mistyped one is answered with the nearest", "[unit][logbook]") {
-  CHECK(entry_kind_names().size() == 9);
+  CHECK(entry_kind_names().size() == 14);
   for (const std::string& known : entry_kind_names()) CHECK(name(must(entry_kind(known))) == known);
   CHECK(name(EntryKind::ampere_hours) == "ampere-hours");
   CHECK(name(EntryKind::correction) == "correction");

@@ -83,7 +83,7 @@ TEST_CASE("what cannot be opened says why, and is left as it was", "[failure][lo
   fs::create_directory(folder / "sub");
   RawDatabase(folder / "other.db").execute("CREATE TABLE stock (x)");
   make_log(folder / "newer.log");
-  RawDatabase(folder / "newer.log").execute("PRAGMA user_version = 2");
+  RawDatabase(folder / "newer.log").execute("PRAGMA user_version = 3");
   make_log(folder / "zero.log");
   RawDatabase(folder / "zero.log").execute("PRAGMA user_version = 0");
 
@@ -106,8 +106,8 @@ TEST_CASE("what cannot be opened says why, and is left as it was", "[failure][lo
       {"empty.log", read_write, Fault::bad_input, "the file is empty"},
       {"empty.log", read_only, Fault::bad_input, "the file is empty"},
       {"other.db", create, Fault::bad_input, "this is a database of another program"},
-      {"newer.log", create, Fault::refused, "the logbook has format version 2"},
-      {"newer.log", read_only, Fault::refused, "the logbook has format version 2"},
+      {"newer.log", create, Fault::refused, "the logbook has format version 3"},
+      {"newer.log", read_only, Fault::refused, "the logbook has format version 3"},
       {"zero.log", create, Fault::refused, "the logbook has format version 0"},
   };
   const auto before = files_in(folder.path());

@@ -24,9 +24,9 @@ TEST_CASE("entries that may not be logged are refused with the reason and leave 
   must(log.append(note()));
 
   NewEntry note_that_corrects = note();
-  note_that_corrects.corrects = 1;
+  note_that_corrects.about = 1;
   NewEntry correction_of_nothing = correction(1);
-  correction_of_nothing.corrects.reset();
+  correction_of_nothing.about.reset();
 
   struct Row {
     NewEntry entry;
@@ -46,16 +46,16 @@ TEST_CASE("entries that may not be logged are refused with the reason and leave 
       {with(&NewEntry::by, "\xED\xA0\x80"), "by", "byte 0 is not UTF-8"},      // surrogate
       {with(&NewEntry::by, "\xF4\x90\x80\x80"), "by", "byte 0 is not UTF-8"},  // above U+10FFFF
       {with(&NewEntry::by, "\xE2\x82"), "by", "byte 0 is not UTF-8"},          // cut short
-      {with(&NewEntry::program, "\xFF"), "program", "byte 0 is not UTF-8"},
+      {with(&NewEntry::bath_type, "\xFF"), "bath_type", "byte 0 is not UTF-8"},
       {with(&NewEntry::body, ""), "body", "not valid JSON"},
       {with(&NewEntry::body, "{\"Ah\":}"), "body", "not valid JSON"},
       {with(&NewEntry::body, "\"\xFF\""), "body", "not valid JSON"},
       {with(&NewEntry::body, std::string("{}\0x", 4)), "body", "not valid JSON"},
       {with(&NewEntry::body, '"' + std::string((1 << 20) - 1, 'x') + '"'), "body", "1048577 bytes"},
-      {note_that_corrects, "corrects", "entry 1 named by an entry of kind note"},
-      {correction_of_nothing, "corrects", "a correction that names no entry"},
-      {correction(2), "corrects", "there is no entry 2"},
-      {of_tank("zinc-2", correction(1)), "corrects", "entry 1 is of tank nickel-1"},
+      {note_that_corrects, "about", "entry 1 named by an entry of kind note"},
+      {correction_of_nothing, "about", "a correction that names no entry"},
+      {correction(2), "about", "there is no entry 2"},
+      {of_tank("zinc-2", correction(1)), "about", "entry 1 is of tank nickel-1"},
       {with(&NewEntry::body, "{}", correction(1)), "body", "a correction without a reason"},
       {with(&NewEntry::body, "[\"reason\"]", correction(1)), "body", "a correction without a reason"},
       {with(&NewEntry::body, "{\"reason\":\"\"}", correction(1)), "body", "a correction without a reason"},
@@ -94,7 +94,7 @@ TEST_CASE("all that is wrong with an entry is said at once", "[failure][logbook]
   REQUIRE_FALSE(refused);
   std::vector<std::string> where;
   for (const Problem& problem : refused.problems()) where.push_back(problem.where);
-  CHECK(where == std::vector<std::string>{"tank", "shift", "by", "body", "corrects"});
+  CHECK(where == std::vector<std::string>{"tank", "shift", "by", "body", "about"});
 }
 
 TEST_CASE("a station needs a name", "[failure][logbook]") {

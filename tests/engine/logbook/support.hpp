@@ -37,23 +37,27 @@ inline UtcTime utc(int year, unsigned month, unsigned day, int hour, int minute)
 /// Shows what it was last set to.
 struct HeldClock final : Clock {
   UtcTime now = utc(2026, 3, 2, 5, 40);
+  Uptime on;
   UtcTime utc_now() const override { return now; }
+  Uptime uptime() const override { return on; }
 };
+
+/// PINs that are quick to try.
+inline constexpr PinCost cheap{.memory_KiB = 8, .passes = 1};
 
 inline NewEntry note(const std::string& text = "anode bag torn") {
   return {.kind = EntryKind::note,
           .tank = "nickel-1",
           .shift = "night",
           .by = "M. Okafor",
-          .body = "{\"text\":\"" + text + "\"}",
-          .program = "bathwright 0.1.0"};
+          .body = "{\"text\":\"" + text + "\"}"};
 }
 
 inline NewEntry correction(std::int64_t corrects) {
   NewEntry entry = note();
   entry.kind = EntryKind::correction;
   entry.body = R"({"reason":"digits swapped"})";
-  entry.corrects = corrects;
+  entry.about = corrects;
   return entry;
 }
 
