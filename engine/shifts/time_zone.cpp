@@ -74,11 +74,15 @@ std::string TimeZone::local_text(UtcTime time) const {
                      clock.hours().count(), clock.minutes().count());
 }
 
-std::string TimeZone::local_text_with_offset(UtcTime time) const {
+std::string TimeZone::offset_text(UtcTime time) const {
   const auto added = offset(time);
   const std::chrono::hh_mm_ss size(std::chrono::abs(added));
-  return fmt::format("{} {}{:02}:{:02}", local_text(time), added.count() < 0 ? '-' : '+',
-                     size.hours().count(), size.minutes().count());
+  return fmt::format("{}{:02}:{:02}", added.count() < 0 ? '-' : '+', size.hours().count(),
+                     size.minutes().count());
+}
+
+std::string TimeZone::local_text_with_offset(UtcTime time) const {
+  return local_text(time) + ' ' + offset_text(time);
 }
 
 }  // namespace bathwright::shifts

@@ -126,7 +126,7 @@ std::string printable(std::string_view text) {
   return shown.size() < text.size() ? shown + "..." : shown;
 }
 
-Result<std::string> read_text_file(const std::string& path) {
+Result<std::string> read_text_file(const std::string& path, std::size_t longest) {
   std::error_code ignored;
   if (std::filesystem::is_directory(path, ignored)) {
     return Problem{Fault::io, path, "is a folder", "a file", "Name the file in it."};
@@ -136,10 +136,15 @@ Result<std::string> read_text_file(const std::string& path) {
     return Problem{Fault::io, path, std::string("cannot be opened: ") + std::strerror(errno),
                    "a file to read", "Check the path."};
   }
-  std::string text(longest_file_bytes + 1, '\0');
-  file.read(text.data(), static_cast<std::streamsize>(text.size()));
+  std::string text;
+  for (std::size_t got = 1; got > 0 && text.size() <= longest;) {
+    const std::size_t before = text.size();
+    text.resize(std::min(longest + 1, before + longest_file_bytes));
+    file.read(text.data() + before, static_cast<std::streamsize>(text.size() - before));
+    got = static_cast<std::size_t>(file.gcount());
+    text.resize(before + got);
+  }
   if (file.bad()) return Problem{Fault::io, path, "cannot be read to its end", "", ""};
-  text.resize(static_cast<std::size_t>(file.gcount()));
   return text;
 }
 

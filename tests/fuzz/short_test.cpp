@@ -28,6 +28,7 @@ const std::vector<Target> targets = {
     {"csv_table", fuzz::csv_table},
     {"reaction", fuzz::reaction},
     {"plugin_tables", fuzz::plugin_tables, 200},  // each input resolves every equilibrium anew
+    {"analyses_csv", fuzz::analyses_csv},
 };
 
 /// By name, so that the same seed is damaged in the same way everywhere.

@@ -20,5 +20,6 @@ BrokenPromise quantity(std::string_view input);
 BrokenPromise csv_table(std::string_view input);
 BrokenPromise reaction(std::string_view input);
 BrokenPromise plugin_tables(std::string_view input);
+BrokenPromise analyses_csv(std::string_view input);
 
 }  // namespace fuzz

@@ -1,7 +1,8 @@
-// A text shortened for a message, without cutting a letter in two: half a letter is not UTF-8, and no JSON
-// holds it.
+// Letters in UTF-8: whether they are, and a text shortened for a message without cutting one in two: half a
+// letter is not UTF-8, and no JSON holds it.
 #pragma once
 
+#include <cstddef>
 #include <string_view>
 
 namespace bathwright {
@@ -12,5 +13,9 @@ namespace bathwright {
   while (most_bytes > 0 && (static_cast<unsigned char>(text[most_bytes]) & 0xC0) == 0x80) --most_bytes;
   return text.substr(0, most_bytes);
 }
+
+/// Bytes of the letter at the start of `text`; 0 where that is not well-formed UTF-8 (The Unicode Standard,
+/// table 3-7), or nothing.
+[[nodiscard]] std::size_t letter_length(std::string_view text);
 
 }  // namespace bathwright

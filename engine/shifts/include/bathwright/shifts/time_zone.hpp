@@ -45,6 +45,8 @@ class TimeZone {
 
   /// "2026-03-02 05:40". In the hour that comes twice, only the offset tells which.
   [[nodiscard]] std::string local_text(UtcTime time) const;
+  /// "+01:00"
+  [[nodiscard]] std::string offset_text(UtcTime time) const;
   /// "2026-10-25 02:30 +01:00"
   [[nodiscard]] std::string local_text_with_offset(UtcTime time) const;
 

@@ -24,8 +24,9 @@ struct Node {
 inline constexpr std::size_t longest_file_bytes = 1 << 20, longest_text_bytes = 1000, longest_key_bytes = 100;
 inline constexpr int deepest_nesting = 5;
 
-/// The whole file at `path`. Fails where it cannot be read or is longer than longest_file_bytes.
-Result<std::string> read_text_file(const std::string& path);
+/// The whole file at `path`, or of a longer one the first `longest` bytes and one more. Fails where it cannot
+/// be read.
+Result<std::string> read_text_file(const std::string& path, std::size_t longest = longest_file_bytes);
 
 /// The tree of `text`; `name` stands for the file in messages. Fails, with the line, on what is not TOML (the
 /// first fault only), and on what is empty, not UTF-8 text, or beyond the limits above.
