@@ -17,11 +17,7 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   Json doc = analysis_document(shop->tank, shop->type(), analysis);
   sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), analysis);
   if (!context.log_file.empty()) {
-    logbook::NewEntry entry;
-    entry.kind = logbook::EntryKind::analysis;
-    entry.tank = shop->tank.name;
-    entry.body = text_of(doc);
-    const auto logged = append_to_log(context, std::move(entry));
+    const auto logged = log_computed(context, *shop, readings_path, logbook::EntryKind::analysis, doc);
     if (!logged) return fail(context, logged.problems());
     doc["logged_as"] = logged->entry.seq;
     sheets::say(lines, words(*logged));

@@ -24,7 +24,8 @@ struct Context {
   bool json = false;
   std::string log_file;  ///< empty: not given
   std::vector<std::string> plugin_folders;
-  std::string by, shift;
+  std::string by, witness, shift;
+  std::string pin_file;  ///< empty: PINs are asked for at the terminal
 };
 
 /// "bathwright 0.1.0".

@@ -67,30 +67,23 @@ Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet,
   return doc;
 }
 
-Result<Logged> log_entry(const Context& context, const Shop& shop, logbook::EntryKind kind,
-                         const Json& body) {
-  logbook::NewEntry entry;
-  entry.kind = kind;
-  entry.tank = shop.tank.name;
-  entry.body = text_of(body);
-  return append_to_log(context, std::move(entry));
-}
-
 /// Logs the analysis, unless it is the last in the log, and the plan made from it; says so on both pages.
-Outcome log_both(const Context& context, const Shop& shop, const Analysed& analysed, Json& doc,
-                 sheets::Lines& lines) {
+Outcome log_both(const Context& context, const Shop& shop, const std::string& readings_path,
+                 const Analysed& analysed, Json& doc, sheets::Lines& lines) {
   std::int64_t analysis_seq = 0;
   if (analysed.logged_as) {
     analysis_seq = *analysed.logged_as;
     sheets::say(lines, "The analysis is already logged as entry " + std::to_string(analysis_seq) + ".");
   } else {
-    const auto logged = log_entry(context, shop, logbook::EntryKind::analysis,
-                                  analysis_document(shop.tank, shop.type(), analysed.analysis));
+    const auto logged = log_computed(context, shop, readings_path, logbook::EntryKind::analysis,
+                                     analysis_document(shop.tank, shop.type(), analysed.analysis));
     if (!logged) return logged.problems();
     analysis_seq = logged->entry.seq;
     sheets::say(lines, words(*logged));
   }
-  const auto planned = log_entry(context, shop, logbook::EntryKind::plan, doc);
+  Json plan = doc;
+  plan["analysis"] = analysis_seq;
+  const auto planned = log_computed(context, shop, readings_path, logbook::EntryKind::plan, plan);
   if (!planned) return planned.problems();
   doc["logged_as"] = {analysis_seq, planned->entry.seq};
   sheets::say(lines, words(*planned));
@@ -113,7 +106,7 @@ int run(const Context& context, const std::string& tank_path, const std::string&
       sheets::addition_sheet(shop->tank, shop->type(), analysis, *sheet, analysed->changed_since,
                              {signer(context), context.shift, program_and_version()});
   if (!context.log_file.empty())
-    if (Outcome logged = log_both(context, *shop, *analysed, doc, lines); !logged)
+    if (Outcome logged = log_both(context, *shop, readings_path, *analysed, doc, lines); !logged)
       return fail(context, logged.problems());
   if (context.json)
     print(doc);

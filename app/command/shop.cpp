@@ -1,5 +1,6 @@
 #include "shop.hpp"
 
+#include <algorithm>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/described/bath_type_file.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
@@ -78,7 +79,11 @@ Result<Shop> open_shop(const Context& context, const std::string& tank_path) {
   if (Problems problems = unknown_aims(*tank, *type); !problems.empty()) return problems;
   auto chemistry = bath::Chemistry::prepare(*type, tank->temperature, tank->idle_temperature);
   if (!chemistry) return chemistry.problems();
-  return Shop{*std::move(tank), *std::move(chemistry)};
+  const auto listed = std::ranges::find_if(types.list(), [&](const plugin_host::Listed& one) {
+    return one.state == plugin_host::State::ready && one.id == type->id;
+  });
+  const std::string hash = listed == types.list().end() ? "" : " sha256:" + listed->sha256;
+  return Shop{*std::move(tank), *std::move(chemistry), type->id + " " + type->version + hash};
 }
 
 Result<bath::TankState> state_at_aims(const Shop& shop) {

@@ -18,6 +18,7 @@ namespace bathwright::command {
 struct Shop {
   bath::Tank tank;
   bath::Chemistry chemistry;
+  std::string made_with;  ///< the bath type as the log names it: identifier, version, hash of its file
 
   [[nodiscard]] const bath::BathType& type() const { return chemistry.type(); }
 };

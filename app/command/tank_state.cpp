@@ -3,6 +3,8 @@
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 #include <bathwright/units/show.hpp>
+#include <fstream>
+#include <iterator>
 
 #include "view_json.hpp"
 
@@ -61,6 +63,23 @@ Result<Analysed> analyse(const Context& context, const Shop& shop, const std::st
     analysed.changed_since = (*last)->changed_since;
   }
   return analysed;
+}
+
+Result<Logged> log_computed(const Context& context, const Shop& shop, const std::string& readings_path,
+                            logbook::EntryKind kind, Json body) {
+  for (const auto& [key, path] :
+       {std::pair{"tank_file", shop.tank.file}, std::pair{"readings_file", readings_path}}) {
+    std::ifstream file(path, std::ios::binary);
+    body["inputs"][key] = std::string(std::istreambuf_iterator<char>(file), {});
+    if (!file)
+      return Problem{Fault::io, path, "can no longer be read", "the file that was computed from", ""};
+  }
+  logbook::NewEntry entry;
+  entry.kind = kind;
+  entry.tank = shop.tank.name;
+  entry.body = text_of(std::move(body));
+  entry.bath_type = shop.made_with;
+  return append_to_log(context, std::move(entry));
 }
 
 Result<StartingState> starting_state(const Context& context, const Shop& shop,

@@ -3,7 +3,7 @@
 
 #include <bathwright/sheets/tank_sheet.hpp>
 
-#include "log_access.hpp"
+#include "log/access.hpp"
 #include "shop.hpp"
 
 namespace bathwright::command {
@@ -23,5 +23,9 @@ struct Analysed {
   std::vector<std::string> changed_since;  ///< what the log has of the tank after it, a sentence each
 };
 Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path);
+
+/// Logs what was computed from a tank's file and readings, with both files' texts and the bath type.
+Result<Logged> log_computed(const Context& context, const Shop& shop, const std::string& readings_path,
+                            logbook::EntryKind kind, Json body);
 
 }  // namespace bathwright::command

@@ -1,17 +1,10 @@
+#include <algorithm>
 #include <bathwright/sheets/log_sheet.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <sstream>
 
 namespace bathwright::sheets {
 namespace {
-
-/// "2026-03-02T05:40:00.000Z" as "2026-03-02 05:40".
-std::string to_the_minute(const std::string& iso) {
-  constexpr std::size_t minute_end = 16;
-  std::string text = iso.substr(0, minute_end);
-  if (text.size() == minute_end) text[10] = ' ';
-  return text;
-}
 
 std::string numbers(const std::vector<std::int64_t>& all) {
   std::string text;
@@ -21,41 +14,74 @@ std::string numbers(const std::vector<std::int64_t>& all) {
 
 }  // namespace
 
-Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by) {
+std::string local_time(const std::string& iso, const std::optional<shifts::Calendar>& calendar) {
+  const auto time = logbook::utc_from_iso(iso);
+  if (time && calendar) return calendar->zone().local_text(*time);
+  constexpr std::size_t minute_end = 16;
+  std::string text = iso.substr(0, minute_end);
+  if (text.size() == minute_end) text[10] = ' ';
+  return text;
+}
+
+Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by,
+               const std::optional<shifts::Calendar>& calendar) {
   Lines lines;
   if (entries.empty()) {
     say(lines, "No entry fits.");
     return lines;
   }
-  Table table({{"no.", Align::number}, {"logged (UTC)"}, {"kind"}, {"tank"}, {"shift"}, {"by"}});
-  for (const auto& entry : entries) {
+  const std::string clock = calendar ? "logged" : "logged (UTC)";
+  const auto row = [&](const logbook::Entry& entry) {
     std::string kind(logbook::name(entry.kind));
     if (entry.about) kind += " of " + std::to_string(*entry.about);
     if (const auto found = corrected_by.find(entry.seq); found != corrected_by.end())
       kind += ", corrected by " + numbers(found->second);
-    table.add({std::to_string(entry.seq), to_the_minute(entry.at), kind, entry.tank, entry.shift, entry.by});
+    const std::string by = entry.witness.empty() ? entry.by : entry.by + ", " + entry.witness;
+    return std::vector<std::string>{std::to_string(entry.seq), local_time(entry.at, calendar), kind, by,
+                                    entry.tank};
+  };
+  // Entries without a shift, as of people and settings, stand where they were logged.
+  for (auto first = entries.begin(); first != entries.end();) {
+    const auto named = std::find_if(first, entries.end(), [](const auto& one) { return !one.shift.empty(); });
+    const std::string shift = named == entries.end() ? "" : named->shift;
+    const auto end = std::find_if(first, entries.end(),
+                                  [&](const auto& one) { return !one.shift.empty() && one.shift != shift; });
+    if (!shift.empty()) heading(lines, "Shift " + shift);
+    Table table({{"no.", Align::number}, {clock}, {"kind"}, {"by"}, {"tank"}});
+    for (; first != end; ++first) table.add(row(*first));
+    append(lines, table.lines());
   }
-  append(lines, table.lines());
+  if (calendar) say(lines, "Times of " + calendar->zone().name() + ".");
   return lines;
 }
 
-Lines log_entry(const logbook::Entry& entry, std::string_view body) {
+Lines log_entry(const logbook::Entry& entry, const std::vector<std::int64_t>& corrections,
+                std::string_view body) {
   Lines lines;
   title(lines, "Entry " + std::to_string(entry.seq) + ", " + std::string(logbook::name(entry.kind)),
         entry.at);
   if (entry.about) say(lines, "about entry " + std::to_string(*entry.about));
-  lines.push_back("tank     " + entry.tank);
-  lines.push_back("shift    " + (entry.shift.empty() ? "not given" : entry.shift));
-  lines.push_back("by       " + entry.by + ", at " + entry.station + ", with " + entry.program);
-  lines.push_back("hash     " + entry.hash);
-  lines.push_back("follows  " + entry.previous);
+  if (!corrections.empty()) say(lines, "corrected by " + numbers(corrections) + ": read that too");
+  const auto line = [&](const char* head, const std::string& text) {
+    if (!text.empty()) lines.push_back(head + text);
+  };
+  line("tank     ", entry.tank);
+  line("shift    ", entry.shift);
+  line("done     ", entry.happened);
+  line("by       ", entry.by + (entry.role.empty() ? ", not signed" : ", signed as " + entry.role));
+  line("witness  ", entry.witness);
+  line("station  ", entry.station);
+  line("program  ", entry.program);
+  line("computed ", entry.bath_type);
+  line("hash     ", entry.hash);
+  line("follows  ", entry.previous);
   lines.emplace_back();
   std::istringstream text{std::string(body)};
-  for (std::string line; std::getline(text, line);) lines.push_back(line);
+  for (std::string next; std::getline(text, next);) lines.push_back(next);
   return lines;
 }
 
-Lines log_verification(const logbook::Verification& v) {
+Lines log_verification(const logbook::Verification& v, std::size_t anchors) {
   Lines lines;
   for (const auto& finding : v.problems) say(lines, finding.words, 2);
   for (const auto& finding : v.clock_steps) say(lines, "Note: " + finding.words, 2);
@@ -66,6 +92,9 @@ Lines log_verification(const logbook::Verification& v) {
     return lines;
   }
   say(lines, entries + ", each as it was logged.");
+  if (anchors > 0)
+    say(lines,
+        std::to_string(anchors) + (anchors == 1 ? " hash" : " hashes") + " noted elsewhere: all in the log.");
   if (v.entries > 0) {
     say(lines, "Last hash, to note elsewhere (a log cut off at its end shows only by it):");
     say(lines, "  " + v.head);

@@ -66,6 +66,22 @@ Outcome Logbook::State::writable() const {
                  "open it for writing to log an entry"};
 }
 
+Outcome Logbook::State::check_slips(const NewEntry& entry) const {
+  if (!entry.about && entry.kind != EntryKind::slip) return Done{};
+  const auto open = open_slips(entry.tank);
+  if (!open) return open.problems();
+  if (entry.kind == EntryKind::slip && !open->empty())
+    return Problem{Fault::refused, "slip",
+                   fmt::format("slip {} of tank {} is still open: what it orders may be in the tank already",
+                               open->back().seq, entry.tank),
+                   "no open slip of the tank",
+                   "find out whether it was carried out, close or cancel it, then analyse again"};
+  if (!entry.about) return Done{};
+  const auto answered = with_seq(*entry.about);
+  if (!answered) return answered.problems();
+  return check_answered(entry, *answered, *open);
+}
+
 Entry Logbook::State::entry_of(const NewEntry& entry, const std::optional<Entry>& last) const {
   Entry made;
   made.seq = last ? last->seq + 1 : 1;
@@ -85,44 +101,50 @@ Entry Logbook::State::entry_of(const NewEntry& entry, const std::optional<Entry>
   return made;
 }
 
-Result<Entry> Logbook::append(const NewEntry& given, const Signatures& signatures) {
+Result<Entry> Logbook::append(const NewEntry& entry, const Signatures& signatures) {
+  auto logged = append_all({entry}, signatures);
+  if (!logged) return logged.problems();
+  return logged->front();
+}
+
+Result<std::vector<Entry>> Logbook::append_all(const std::vector<NewEntry>& given,
+                                               const Signatures& signatures) {
   if (auto may = state_->writable(); !may) return may.problems();
-  NewEntry entry = given;
-  if (entry.by.empty() && signatures.by) entry.by = signatures.by->name;
-  if (auto problems = check(entry); !problems.empty()) return problems;
-  if (entry.kind == EntryKind::failed_pin)
-    return Problem{Fault::refused, "kind", "only the log itself writes of failed PINs", "another kind", ""};
+  std::vector<NewEntry> entries = given;
+  Problems problems;
+  for (NewEntry& entry : entries) {
+    if (entry.by.empty() && signatures.by) entry.by = signatures.by->name;
+    const Problems wrong = check(entry);
+    problems.insert(problems.end(), wrong.begin(), wrong.end());
+    if (entry.kind == EntryKind::failed_pin)
+      problems.push_back(
+          {Fault::refused, "kind", "only the log itself writes of failed PINs", "another kind", ""});
+  }
+  if (!problems.empty()) return problems;
+  if (entries.empty()) return std::vector<Entry>{};
   // Before the write lock is taken: making a key of a PIN takes its time.
-  const auto keys = state_->check_pins(entry, signatures);
+  const auto keys = state_->check_pins(entries.front(), signatures);
   if (!keys) return keys.problems();
 
   WriteTransaction transaction(state_->database);
   if (auto begun = transaction.begin(); !begun) return begun.problems();
-  const auto last = state_->last();
+  auto last = state_->last();
   if (!last) return last.problems();
-  const auto roll = state_->roll();
-  if (!roll) return roll.problems();
-  if (entry.about || entry.kind == EntryKind::slip) {
-    const auto open = state_->open_slips(entry.tank);
-    if (!open) return open.problems();
-    if (entry.kind == EntryKind::slip && !open->empty())
-      return Problem{
-          Fault::refused, "slip",
-          fmt::format("slip {} of tank {} is still open: what it orders may be in the tank already",
-                      open->back().seq, entry.tank),
-          "no open slip of the tank",
-          "find out whether it was carried out, close or cancel it, then analyse again"};
-    if (entry.about) {
-      const auto answered = state_->with_seq(*entry.about);
-      if (!answered) return answered.problems();
-      if (auto fits = check_answered(entry, *answered, *open); !fits) return fits.problems();
-    }
+  const auto known = state_->roll();
+  if (!known) return known.problems();
+  Roll roll = *known;
+  std::optional<Entry> before = *std::move(last);
+  std::vector<Entry> logged;
+  for (const NewEntry& entry : entries) {
+    if (auto fits = state_->check_slips(entry); !fits) return fits.problems();
+    Entry next = state_->entry_of(entry, before);
+    if (auto done = State::sign(next, *keys, roll); !done) return done.problems();
+    next.hash = chain_hash(next);
+    if (auto inserted = insert_entry(state_->database, next); !inserted) return inserted.problems();
+    if (auto learnt = roll.take(next); !learnt) return learnt.problems();
+    before = next;
+    logged.push_back(std::move(next));
   }
-
-  Entry logged = state_->entry_of(entry, *last);
-  if (auto done = State::sign(logged, *keys, *roll); !done) return done.problems();
-  logged.hash = chain_hash(logged);
-  if (auto inserted = insert_entry(state_->database, logged); !inserted) return inserted.problems();
   if (auto committed = transaction.commit(); !committed) return committed.problems();
   return logged;
 }

@@ -45,6 +45,9 @@ struct Logbook::State {
   /// Fills in who signed and the signatures, where the roll lets them write this.
   [[nodiscard]] static Outcome sign(Entry& entry, const Keys& keys, const Roll& roll);
 
+  /// That no slip is issued on an open one, and that what an entry answers is there to be answered.
+  [[nodiscard]] Outcome check_slips(const NewEntry& entry) const;
+
   /// Refuses where the log is open for reading only.
   [[nodiscard]] Outcome writable() const;
 

@@ -111,6 +111,24 @@ Result<std::vector<Entry>> Logbook::open_slips(const std::string& tank) const {
   return state_->open_slips(tank);
 }
 
+Result<std::vector<std::string>> Logbook::tanks() const {
+  // From one name to the next along the index, without walking the entries between.
+  Statement rows = state_->database.prepare(
+      "WITH RECURSIVE name (tank) AS (SELECT min(tank) FROM entry WHERE tank > '' UNION ALL"
+      " SELECT (SELECT min(tank) FROM entry WHERE tank > name.tank) FROM name WHERE name.tank IS NOT NULL)"
+      " SELECT tank FROM name WHERE tank IS NOT NULL");
+  std::vector<std::string> tanks;
+  while (rows.step()) tanks.push_back(rows.text(0));
+  if (rows.failed()) return state_->database.problem();
+  return tanks;
+}
+
+Result<std::string> Logbook::shift_pattern() const {
+  const auto roll = state_->roll();
+  if (!roll) return roll.problems();
+  return roll->shifts();
+}
+
 Result<std::optional<Anchor>> Logbook::head() const {
   const auto last = state_->last();
   if (!last) return last.problems();

@@ -36,6 +36,11 @@ Problem refuse(const Entry& entry, std::string what, std::string expected, std::
           std::move(try_this)};
 }
 
+bool tells_shifts(const Entry& setting) {
+  const Json body = Json::parse(setting.body, nullptr, false);
+  return body.is_object() && body.contains("shifts");
+}
+
 Problem malformed(std::string what, std::string expected) {
   return {Fault::bad_input, "body", std::move(what), std::move(expected), ""};
 }
@@ -100,7 +105,7 @@ Outcome Roll::take(const Entry& entry) {
       people_.push_back(*std::move(told));
   } else if (entry.kind == EntryKind::setting) {
     const Json body = Json::parse(entry.body, nullptr, false);
-    if (body.is_object() && body.contains("shifts")) {
+    if (tells_shifts(entry)) {
       shifts_ = body["shifts"].dump();
       return Done{};
     }
@@ -136,7 +141,7 @@ bool Roll::asks_second(const std::string& tank, EntryKind kind) const {
 
 std::optional<Problem> Roll::refusal(const Entry& entry) const {
   if (people_.empty()) {
-    if (entry.kind == EntryKind::setting)
+    if (entry.kind == EntryKind::setting && !tells_shifts(entry))
       return refuse(entry, "the log has no people who could answer for a rule", "a chemist's signature",
                     "admit the chemist first");
     if (entry.kind != EntryKind::person) return std::nullopt;

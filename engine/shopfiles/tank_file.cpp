@@ -72,13 +72,14 @@ std::optional<Aim> read_aim(Table& target, const std::string& quantity) {
   const auto aim = read(*entry, {"aim", required, is_pH ? "4.2" : R"("42 g/L")"}, quantity);
   const auto low = read(*entry, {"low", required, is_pH ? "3.8" : R"("38 g/L")"}, quantity);
   const auto high = read(*entry, {"high", required, is_pH ? "4.6" : R"("45 g/L")"}, quantity);
+  const auto every = entry->positive({"every", optional, R"("24 h")"}, units::read_duration);
   if (!aim || !low || !high) return std::nullopt;
   if (!(*low <= *aim && *aim <= *high)) {
     target.report(quantity, "the aim is not inside its window", "low <= aim <= high");
   } else if (*low == *high) {
     target.report(quantity, "the window has no width", "low < high");
   }
-  return Aim{quantity, *aim, *low, *high};
+  return Aim{quantity, *aim, *low, *high, every ? std::optional(every->v) : std::nullopt};
 }
 
 void read_targets(Table& root, Tank& tank) {

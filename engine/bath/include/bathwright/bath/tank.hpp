@@ -13,6 +13,7 @@ namespace bathwright::bath {
 struct Aim {
   std::string quantity;  ///< a BathType quantity id, or "pH"
   double aim = 0, low = 0, high = 0;
+  std::optional<double> every_h = {};  ///< how often it is to be analysed, hours
 };
 
 /// A chemical that this shop can add to this tank.

@@ -98,6 +98,10 @@ class Logbook {
   /// for a quarter of an hour. A second slip for a tank whose last is open is refused.
   [[nodiscard]] Result<Entry> append(const NewEntry& entry, const Signatures& signatures = {});
 
+  /// Several at once, in this order: all of them are logged or none.
+  [[nodiscard]] Result<std::vector<Entry>> append_all(const std::vector<NewEntry>& entries,
+                                                      const Signatures& signatures = {});
+
   /// Entries of another copy of this log, as they are: those it has already are passed over, the others must
   /// carry the chain on. Returns how many were new; where one does not fit, none is taken.
   [[nodiscard]] Result<std::int64_t> take_over(const std::vector<Entry>& entries);
@@ -126,6 +130,12 @@ class Logbook {
 
   /// Slips not closed yet, of one tank or of all, oldest first.
   [[nodiscard]] Result<std::vector<Entry>> open_slips(const std::string& tank = {}) const;
+
+  /// Every tank the log has entries of, in the order of their names.
+  [[nodiscard]] Result<std::vector<std::string>> tanks() const;
+
+  /// The shifts as a setting last told them, JSON; empty where none did.
+  [[nodiscard]] Result<std::string> shift_pattern() const;
 
   /// The last entry's number and hash, to be noted elsewhere; nothing in an empty log.
   [[nodiscard]] Result<std::optional<Anchor>> head() const;

@@ -3,6 +3,7 @@
 
 #include <bathwright/analysis/analysis.hpp>
 #include <bathwright/logbook/logbook.hpp>
+#include <bathwright/shifts/calendar.hpp>
 #include <filesystem>
 
 #include "context.hpp"
@@ -16,17 +17,38 @@ namespace bathwright::command {
 /// Who signs: --by, else the user of the computer, else "unsigned".
 [[nodiscard]] std::string signer(const Context& context);
 
+/// The computer's clock, for every log that is opened here.
+[[nodiscard]] const logbook::Clock& wall_clock();
+
 /// Opens for reading; a log that does not exist is bad input.
 Result<logbook::Logbook> open_log_to_read(const Context& context);
 
-/// The log with one entry more, signed with the context's name and shift. Makes the log, and the data folder
-/// where no --log was given, on the first entry.
+/// Opens for writing, with this program's and this station's names. Makes the log, and the data folder where
+/// no
+/// --log was given.
+struct OpenLog {
+  logbook::Logbook log;
+  std::filesystem::path path;
+  bool is_new = false;
+};
+Result<OpenLog> open_log_to_write(const Context& context);
+
+/// The calendar of the log's shifts; nothing where none were set.
+Result<std::optional<shifts::Calendar>> calendar_of(const logbook::Logbook& log);
+
+/// The log with one entry more, signed with the context's names and PINs. The shift is the context's, else
+/// that of the hour. Makes the log on the first entry.
 struct Logged {
   logbook::Entry entry;
   std::filesystem::path path;
   bool new_log = false;
 };
 Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry);
+
+/// Several at once, all or none, into an open log; by and shift are filled in as above, the shift where an
+/// entry has none, by when it happened.
+Result<std::vector<logbook::Entry>> append_all(const Context& context, OpenLog& open,
+                                               std::vector<logbook::NewEntry> entries);
 
 /// "Logged as entry 12 in shift-log.sqlite."
 [[nodiscard]] std::string words(const Logged& logged);
@@ -45,7 +67,7 @@ struct LastAnalysis {
 /// in it.
 Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const std::string& tank);
 
-/// --by NAME and --shift NAME, for verbs that log.
+/// --by, --witness, --pin-file and --shift, for verbs that log.
 void add_signature(CLI::App& verb, Context& context);
 
 }  // namespace bathwright::command
