@@ -134,7 +134,7 @@ Result<Database> Database::open(const fs::path& path, OpenMode mode, std::chrono
               "ask for write permission, or open it for reading only");
   sqlite3_busy_timeout(connection, static_cast<int>(wait.count()));
   if (auto set = database.execute(
-          "PRAGMA synchronous = FULL; PRAGMA foreign_keys = ON; PRAGMA trusted_schema = OFF");
+          "PRAGMA synchronous = FULL; PRAGMA foreign_keys = ON; PRAGMA trusted_schema = OFF; PRAGMA cache_size = -32768");
       !set)
     return set.problems();
   if (mode == OpenMode::read_only)

@@ -40,6 +40,10 @@ struct Logbook::State {
   [[nodiscard]] Result<std::vector<Entry>> open_slips(const std::string& tank) const;
   [[nodiscard]] Result<Roll> roll() const;
 
+  /// No entry before has a wall clock of `at` or later; none after has one earlier than `at`.
+  [[nodiscard]] Result<std::int64_t> first_from(const std::string& at) const;
+  [[nodiscard]] Result<std::int64_t> last_before(const std::string& at) const;
+
   /// The keys of those who sign, by their PINs. A wrong PIN is logged.
   [[nodiscard]] Result<Keys> check_pins(const NewEntry& entry, const Signatures& signatures);
   /// Fills in who signed and the signatures, where the roll lets them write this.

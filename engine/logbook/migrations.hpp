@@ -50,7 +50,16 @@ ALTER TABLE entry ADD COLUMN bath_type TEXT NOT NULL DEFAULT '';
 ALTER TABLE entry ADD COLUMN signature TEXT NOT NULL DEFAULT '';
 ALTER TABLE entry ADD COLUMN witness_signature TEXT NOT NULL DEFAULT '';
 CREATE INDEX entry_by_kind ON entry (kind, seq);
-CREATE INDEX entry_by_time ON entry (at, seq);
+-- The latest wall clock so far: unlike "at" it never falls, whatever is done to the clock, so that the entries of
+-- a span of time are a span of numbers, apart from those logged while the clock was behind.
+ALTER TABLE entry ADD COLUMN latest_at TEXT NOT NULL DEFAULT '';
+DROP TRIGGER entry_no_update;
+UPDATE entry SET latest_at = told.at FROM (SELECT seq, max(at) OVER (ORDER BY seq) AS at FROM entry) AS told
+  WHERE told.seq = entry.seq;
+CREATE TRIGGER entry_no_update BEFORE UPDATE ON entry
+  BEGIN SELECT RAISE(ABORT, 'log entries are never changed; add a correction'); END;
+CREATE INDEX entry_by_time ON entry (latest_at, seq);
+CREATE INDEX entry_set_back ON entry (at, seq) WHERE at < latest_at;
 CREATE INDEX entry_by_writer ON entry ("by", seq);
 CREATE INDEX entry_by_answered ON entry (about, kind) WHERE about IS NOT NULL;
 -- Three letters and more are found by index wherever they stand. Filled beside each entry, in its transaction:

@@ -2,6 +2,8 @@
 #include <fmt/format.h>
 #include <fmt/ranges.h>
 
+#include <limits>
+
 #include "logbook_state.hpp"
 #include "schema.hpp"
 #include "stored_entry.hpp"
@@ -62,6 +64,24 @@ Result<Roll> Logbook::State::roll() const {
   return roll;
 }
 
+Result<std::int64_t> Logbook::State::first_from(const std::string& at) const {
+  Statement row =
+      database.prepare("SELECT seq FROM entry WHERE latest_at >= ? ORDER BY latest_at, seq LIMIT 1");
+  row.bind(1, at);
+  if (row.step()) return row.integer(0);
+  if (row.failed()) return database.problem();
+  return std::numeric_limits<std::int64_t>::max();
+}
+
+Result<std::int64_t> Logbook::State::last_before(const std::string& at) const {
+  Statement row = database.prepare(
+      "SELECT max(coalesce((SELECT seq FROM entry WHERE latest_at < ?1 ORDER BY latest_at DESC, seq DESC LIMIT 1), 0),"
+      " coalesce((SELECT max(seq) FROM entry INDEXED BY entry_set_back WHERE at < latest_at AND at < ?1), 0))");
+  row.bind(1, at);
+  if (row.step()) return row.integer(0);
+  return database.problem();
+}
+
 Result<std::vector<Entry>> Logbook::list(const Filter& filter) const {
   std::vector<std::string> conditions{"TRUE"};
   std::vector<State::Value> values;
@@ -82,9 +102,19 @@ Result<std::vector<Entry>> Logbook::list(const Filter& filter) const {
   if (!filter.by.empty()) restrict("entry.\"by\" = ?", filter.by);
   if (!filter.shift.empty()) restrict("entry.shift = ?", filter.shift);
   if (filter.about) restrict("entry.about = ?", *filter.about);
-  if (filter.from) restrict("entry.at >= ?", iso_utc(*filter.from));
-  if (filter.to) restrict("entry.at < ?", iso_utc(*filter.to));
   const std::string order = from.empty() ? "entry.seq" : "entry_text.rowid";
+  if (filter.from) {
+    const auto first = state_->first_from(iso_utc(*filter.from));
+    if (!first) return first.problems();
+    restrict((order + " >= ?").c_str(), *first);
+    restrict("entry.at >= ?", iso_utc(*filter.from));
+  }
+  if (filter.to) {
+    const auto last = state_->last_before(iso_utc(*filter.to));
+    if (!last) return last.problems();
+    restrict((order + " <= ?").c_str(), *last);
+    restrict("entry.at < ?", iso_utc(*filter.to));
+  }
   if (filter.after_seq != 0)
     restrict((order + (filter.newest_first ? " < ?" : " > ?")).c_str(), filter.after_seq);
   std::string clauses = fmt::format("{}WHERE {} ORDER BY {} {}", from, fmt::join(conditions, " AND "), order,

@@ -2,25 +2,39 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
+#include <array>
+
 namespace bathwright::logbook {
 namespace {
 
 // In the order of namespace column.
-constexpr std::string_view columns =
-    "form, seq, kind, tank, shift, at, happened, boot, uptime_ms, station, \"by\", role, witness, body, about, "
-    "program, bath_type, previous, signature, witness_signature, hash";
+constexpr std::array<std::string_view, 22> names{"form",      "seq",      "kind",      "tank",
+                                                 "shift",     "at",       "happened",  "boot",
+                                                 "uptime_ms", "station",  "by",        "role",
+                                                 "witness",   "body",     "about",     "program",
+                                                 "bath_type", "previous", "signature", "witness_signature",
+                                                 "hash",      "latest_at"};
+
+/// The names with `before` in front of each; quoted, as "by" is a word of SQL.
+std::string listed(std::string_view before) {
+  std::string all;
+  for (const std::string_view name : names)
+    all += fmt::format("{}{}\"{}\"", all.empty() ? "" : ", ", before, name);
+  return all;
+}
 
 }  // namespace
 
+int column_of(std::string_view name) {
+  const auto found = std::ranges::find(names, name);
+  return found == names.end() ? 0 : static_cast<int>(found - names.begin());
+}
+
 std::string select_entries(std::string_view rest) {
-  static const std::string qualified = [] {
-    // The search index has columns of the same names.
-    std::string all = fmt::format("entry.{}", columns);
-    for (std::size_t at = 0; (at = all.find(", ", at)) != std::string::npos; at += 2)
-      all.insert(at + 2, "entry.");
-    return all;
-  }();
-  return fmt::format("SELECT {} FROM entry {}", qualified, rest);
+  // The search index has columns of the same names.
+  static const std::string columns = listed("entry.");
+  return fmt::format("SELECT {} FROM entry {}", columns, rest);
 }
 
 Result<Entry> read_entry(const Statement& row) {
@@ -53,8 +67,9 @@ Result<Entry> read_entry(const Statement& row) {
 
 Outcome insert_entry(const Database& database, const Entry& entry) {
   Statement insert = database.prepare(fmt::format(
-      "INSERT INTO entry ({}) VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?)",
-      columns));
+      "INSERT INTO entry ({}) VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?,"
+      " max(?{}, coalesce((SELECT latest_at FROM entry WHERE seq = ?{} - 1), '')))",
+      listed(""), 1 + column::at, 1 + column::seq));
   insert.bind(1 + column::form, entry.form)
       .bind(1 + column::seq, entry.seq)
       .bind(1 + column::kind, name(entry.kind))

@@ -2,6 +2,7 @@
 #pragma once
 
 #include <string>
+#include <string_view>
 
 #include "bathwright/base/result.hpp"
 #include "bathwright/logbook/entry.hpp"
@@ -32,9 +33,13 @@ enum : int {
   previous,
   signature,
   witness_signature,
-  hash
+  hash,
+  latest_at  ///< kept by the table, not part of an entry
 };
 }
+
+/// Where a column of the table stands; one that does not belong to it stands first.
+[[nodiscard]] int column_of(std::string_view name);
 
 /// "SELECT every column FROM entry " with `rest` behind it.
 [[nodiscard]] std::string select_entries(std::string_view rest);

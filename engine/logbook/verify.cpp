@@ -6,6 +6,7 @@
 #include <utility>
 
 #include "chain.hpp"
+#include "index_checks.hpp"
 #include "migrations.hpp"
 #include "roll.hpp"
 #include "schema.hpp"
@@ -15,9 +16,9 @@
 namespace bathwright::logbook {
 namespace {
 
-/// SQLite's own check of pages, indexes, column types and constraints.
+/// SQLite's own check of pages, column types and constraints. What the indexes hold, IndexChecks looks at.
 void check_file(const Database& database, std::vector<Finding>& findings) {
-  constexpr const char* at_most_20_lines = "PRAGMA integrity_check(20)";
+  constexpr const char* at_most_20_lines = "PRAGMA quick_check(20)";
   Statement check = database.prepare(at_most_20_lines);
   while (check.step())
     if (check.text(0) != "ok")
@@ -33,6 +34,7 @@ class Walk {
     Statement rows = database_.prepare(select_entries("ORDER BY seq"));
     while (rows.step()) visit(rows);
     signatures_.finish();
+    indexes_.compare(database_, report_.problems);
     if (rows.failed()) find(FindingKind::unreadable, last_seq_, database_.problem().text());
     report_.head = last_hash_;
   }
@@ -40,6 +42,7 @@ class Walk {
  private:
   void visit(const Statement& row) {
     ++report_.entries;
+    indexes_.take(row);
     const auto entry = read_entry(row);
     if (!entry) {
       const std::int64_t seq = row.integer(column::seq);
@@ -50,6 +53,10 @@ class Walk {
     }
     const bool in_sequence = check_sequence(entry->seq);
     check_form(*entry);
+    latest_at_ = std::max(latest_at_, entry->at);
+    if (row.view(column::latest_at) != latest_at_)
+      find(FindingKind::changed, entry->seq,
+           fmt::format("what the table notes beside entry {}, for lists by time, was changed", entry->seq));
     check_signers(*entry);
     if (chain_hash(*entry) != entry->hash)
       find(FindingKind::changed, entry->seq, fmt::format("entry {} is not as it was logged", entry->seq));
@@ -145,7 +152,8 @@ class Walk {
   std::int64_t last_form_ = 1;
   std::int64_t last_seq_ = 0;
   std::string last_hash_ = first_previous();
-  std::string last_at_;
+  std::string last_at_, latest_at_;
+  IndexChecks indexes_{database_};
 };
 
 /// Each anchor must be the hash of an entry, and of the one it was noted of.

@@ -6,6 +6,7 @@
 #include <algorithm>
 #include <cstdlib>
 #include <fstream>
+#include <iterator>
 #include <sstream>
 
 namespace app_test {
@@ -44,6 +45,11 @@ Run Bench::run(const std::string& arguments) const {
 
 void Bench::write(const std::string& file, const std::string& content) const {
   std::ofstream(folder_ / "work" / file) << content;
+}
+
+std::string Bench::read(const std::string& file) const {
+  std::ifstream in(folder_ / "work" / file, std::ios::binary);
+  return {std::istreambuf_iterator<char>(in), {}};
 }
 
 std::vector<std::string> Bench::listing() const {

@@ -27,6 +27,7 @@ class Bench {
   /// arguments: as typed into a shell.
   [[nodiscard]] Run run(const std::string& arguments) const;
   void write(const std::string& file, const std::string& content) const;
+  [[nodiscard]] std::string read(const std::string& file) const;
   /// Names and contents of everything in the folder.
   [[nodiscard]] std::vector<std::string> listing() const;
   [[nodiscard]] const std::filesystem::path& folder() const { return folder_; }

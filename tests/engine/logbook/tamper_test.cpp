@@ -175,8 +175,8 @@ TEST_CASE("removed, moved and added entries are found", "[failure][logbook]") {
   constexpr auto changed = FindingKind::changed, gap = FindingKind::gap, reordered = FindingKind::reordered,
                  link = FindingKind::link;
   const std::string forge =
-      "INSERT INTO entry (seq, kind, tank, shift, at, station, \"by\", body, about, program, form, previous, hash) ";
-  const std::string forged = "kind, tank, shift, at, station, \"by\", '{}', NULL, program, form, ";
+      "INSERT INTO entry (seq, kind, tank, shift, at, station, \"by\", body, about, program, form, latest_at, previous, hash) ";
+  const std::string forged = "kind, tank, shift, at, station, \"by\", '{}', NULL, program, form, latest_at, ";
   struct Row {
     const char* what;
     std::string sql;
