@@ -60,15 +60,39 @@ std::string file_uri(const fs::path& path, std::string_view query) {
   return uri.append("?").append(query);
 }
 
-/// After a failed write: whether a quota or a limit on the file's size was the cause. SQLite itself tells
-/// only the full disk (ENOSPC) from other failures, and keeps no system error for a failed COMMIT but in the
-/// file.
-bool no_space_for_log(sqlite3* connection) {
-  sqlite3_file* log = nullptr;
-  sqlite3_file_control(connection, "main", SQLITE_FCNTL_JOURNAL_POINTER, &log);
-  int error = 0;
-  if (log && log->pMethods) log->pMethods->xFileControl(log, SQLITE_FCNTL_LAST_ERRNO, &error);
-  return error == EDQUOT || error == EFBIG;
+/// SQLITE_FCNTL_FILE_POINTER: the main file; SQLITE_FCNTL_JOURNAL_POINTER: the write-ahead log or rollback
+/// journal. Null while it is not open.
+sqlite3_file* open_file(sqlite3* connection, int which) {
+  sqlite3_file* file = nullptr;
+  sqlite3_file_control(connection, "main", which, &file);
+  return file && file->pMethods ? file : nullptr;
+}
+
+/// After a failed write: whether the disk, a quota or a limit on the file's size was the cause. SQLite itself
+/// tells only a write to a full disk from other failures, and keeps no system error for a failed COMMIT but
+/// in its files.
+bool no_space(sqlite3* connection) {
+  const auto means_no_space = [](int error) { return error == ENOSPC || error == EDQUOT || error == EFBIG; };
+  if (means_no_space(sqlite3_system_errno(connection))) return true;
+  for (const int which : {SQLITE_FCNTL_FILE_POINTER, SQLITE_FCNTL_JOURNAL_POINTER}) {
+    int error = 0;
+    if (sqlite3_file* file = open_file(connection, which))
+      file->pMethods->xFileControl(file, SQLITE_FCNTL_LAST_ERRNO, &error);
+    if (means_no_space(error)) return true;
+  }
+  return false;
+}
+
+/// Whether what is open is still what the next program will find under the log's name. The system lets a file
+/// be written that was moved or removed; what goes there is lost. A database in memory has no name.
+bool still_in_place(sqlite3* connection) {
+  const char* name = sqlite3_db_filename(connection, "main");
+  if (!name || *name == '\0') return true;
+  int moved = 0;
+  sqlite3_file_control(connection, "main", SQLITE_FCNTL_HAS_MOVED, &moved);
+  if (moved != 0) return false;
+  return !open_file(connection, SQLITE_FCNTL_JOURNAL_POINTER) ||
+         access(sqlite3_filename_wal(name), F_OK) == 0 || access(sqlite3_filename_journal(name), F_OK) == 0;
 }
 
 }  // namespace
@@ -167,7 +191,7 @@ Outcome Database::execute(const char* sql) const {
 Problem Database::problem() const {
   const int extended = sqlite3_extended_errcode(connection_.get());
   const int system = sqlite3_system_errno(connection_.get());
-  if (extended == SQLITE_FULL || (extended == SQLITE_IOERR_WRITE && no_space_for_log(connection_.get())))
+  if (extended == SQLITE_FULL || ((extended & 0xFF) == SQLITE_IOERR && no_space(connection_.get())))
     return io(name_, "the disk is full; nothing was logged", "free some space, then log the entry again");
   switch (extended & 0xFF) {
     case SQLITE_NOTADB:
@@ -211,6 +235,10 @@ Outcome WriteTransaction::begin() {
 }
 
 Outcome WriteTransaction::commit() {
+  if (!still_in_place(database_.connection_.get()))
+    return io(database_.name_,
+              "the file or its -wal was moved or removed while it was open; nothing was logged",
+              "put it back, or open the logbook where it is now, and log the entry again");
   auto committed = database_.execute("COMMIT");
   if (committed) open_ = false;
   return committed;

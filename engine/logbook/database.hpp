@@ -69,6 +69,7 @@ class Database {
   const std::string& name() const { return name_; }
 
  private:
+  friend class WriteTransaction;
   struct Close {
     void operator()(sqlite3* connection) const { sqlite3_close_v2(connection); }
   };
@@ -89,7 +90,7 @@ class WriteTransaction {
   WriteTransaction& operator=(const WriteTransaction&) = delete;
 
   Outcome begin();
-  /// Success means the changes are on the disk.
+  /// Success means the changes are on the disk, in the file of that name.
   Outcome commit();
 
  private:
