@@ -7,6 +7,8 @@
 #include <cstring>
 #include <utility>
 
+#include "wal_frames.hpp"
+
 namespace bathwright::logbook {
 
 namespace fs = std::filesystem;
@@ -40,6 +42,23 @@ std::optional<Problem> problem_with_path(const fs::path& path, OpenMode mode) {
   if (status.type() == fs::file_type::not_found && mode != OpenMode::create)
     return io(path.string(), "there is no such file", "check the path, or start a new logbook there");
   return std::nullopt;
+}
+
+Problem damaged(const std::string& name, std::string_view how) {
+  return {
+      Fault::inconsistent_data, name, fmt::format("the file is damaged ({})", how), "",
+      "keep a copy of it untouched, with the -wal file beside it; check the disk, and go on with the last good "
+      "backup and what the damaged log still holds"};
+}
+
+/// SQLite would take the log for one that ends where its write-ahead log is damaged, and write on from there.
+std::optional<Problem> problem_with_wal(const fs::path& path) {
+  const auto damage = [&] { return damaged_frame(read_wal(wal_bytes(path))); };
+  const auto frame = damage();
+  // Another program may be writing. What it had half written before has changed by now; damage stays.
+  if (!frame || damage() != frame) return std::nullopt;
+  return damaged(path.string(), *frame == 0 ? "the head of its -wal file"
+                                            : fmt::format("frame {} of its -wal file", *frame));
 }
 
 bool writable(const fs::path& path) { return access(path.c_str(), W_OK) == 0; }
@@ -140,6 +159,7 @@ Database::Database(sqlite3* connection, std::string name, std::chrono::milliseco
 
 Result<Database> Database::open(const fs::path& path, OpenMode mode, std::chrono::milliseconds wait) {
   if (auto problem = problem_with_path(path, mode)) return *std::move(problem);
+  if (auto problem = problem_with_wal(path)) return *std::move(problem);
 
   const bool as_it_stands = mode == OpenMode::read_only && must_read_as_it_stands(path);
   // A reader, too, asks SQLite for write access where it has it: only then are the helper files cleared away
@@ -183,6 +203,23 @@ Result<Database> Database::copied_to_memory() const {
   return copy;
 }
 
+Database Database::on_image(std::string& image) {
+  Database database = in_memory();
+  const auto size = static_cast<sqlite3_int64>(image.size());
+  sqlite3_deserialize(database.connection_.get(), "main", reinterpret_cast<unsigned char*>(image.data()),
+                      size, size, SQLITE_DESERIALIZE_READONLY);
+  return database;
+}
+
+std::string Database::image() const {
+  sqlite3_int64 size = 0;
+  unsigned char* bytes = sqlite3_serialize(connection_.get(), "main", &size, 0);
+  if (!bytes) return {};
+  std::string image(reinterpret_cast<const char*>(bytes), static_cast<std::size_t>(size));
+  sqlite3_free(bytes);
+  return image;
+}
+
 Outcome Database::execute(const char* sql) const {
   if (sqlite3_exec(connection_.get(), sql, nullptr, nullptr, nullptr) != SQLITE_OK) return problem();
   return Done{};
@@ -197,9 +234,7 @@ Problem Database::problem() const {
     case SQLITE_NOTADB:
       return {Fault::bad_input, name_, "this file is not a logbook", "a logbook file", "check the path"};
     case SQLITE_CORRUPT:
-      return {Fault::inconsistent_data, name_,
-              fmt::format("the file is damaged ({})", sqlite3_errmsg(connection_.get())), "",
-              "keep a copy of it untouched, check the disk, and go on with the last good backup"};
+      return damaged(name_, sqlite3_errmsg(connection_.get()));
     case SQLITE_BUSY:
     case SQLITE_LOCKED:
       return io(name_,

@@ -57,6 +57,12 @@ class Database {
   /// What it holds, in memory, under the same name.
   Result<Database> copied_to_memory() const;
 
+  /// A database whose pages are `image`, to be read only; `image` must stay as it is meanwhile.
+  static Database on_image(std::string& image);
+
+  /// Its pages.
+  std::string image() const;
+
   Statement prepare(std::string_view sql) const { return Statement(connection_.get(), sql); }
 
   /// Runs one or more statements that give no rows.

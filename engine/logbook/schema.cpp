@@ -66,16 +66,18 @@ Result<SchemaObjects> schema_objects(const Database& database) {
 
 /// What SQLite itself makes of our SQL, so that there is no second list to keep.
 const SchemaObjects& expected_objects() {
-  static const SchemaObjects expected = [] {
-    const Database reference = Database::in_memory();
-    [[maybe_unused]] const auto made = take_steps_from(reference, 0);
-    assert(made);
-    return schema_objects(reference).value();
-  }();
+  static const SchemaObjects expected = schema_objects(tables_in_memory()).value();
   return expected;
 }
 
 }  // namespace
+
+Database tables_in_memory() {
+  Database reference = Database::in_memory();
+  [[maybe_unused]] const auto made = take_steps_from(reference, 0);
+  assert(made);
+  return reference;
+}
 
 Outcome prepare_schema(Database& database, OpenMode mode) {
   const auto identity = identify(database);

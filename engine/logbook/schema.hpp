@@ -14,6 +14,9 @@ namespace bathwright::logbook {
 /// up. Any other file is left as it is and answered with a problem.
 [[nodiscard]] Outcome prepare_schema(Database& database, OpenMode mode);
 
+/// The tables of an empty log of this version.
+[[nodiscard]] Database tables_in_memory();
+
 /// Adds a finding for each table, index or trigger that is missing, altered or foreign.
 void check_guards(const Database& database, std::vector<Finding>& findings);
 
