@@ -17,7 +17,9 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   Json doc = analysis_document(shop->tank, shop->type(), analysis);
   sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), analysis);
   if (!context.log_file.empty()) {
-    const auto logged = log_computed(context, *shop, readings_path, logbook::EntryKind::analysis, doc);
+    const auto entry = entry_computed(*shop, readings_path, logbook::EntryKind::analysis, doc);
+    if (!entry) return fail(context, entry.problems());
+    const auto logged = append_to_log(context, *entry);
     if (!logged) return fail(context, logged.problems());
     doc["logged_as"] = logged->entry.seq;
     sheets::say(lines, words(*logged));

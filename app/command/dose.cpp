@@ -67,30 +67,78 @@ Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet,
   return doc;
 }
 
-/// Logs the analysis, unless it is the last in the log, and the plan made from it; says so on both pages.
-Outcome log_both(const Context& context, const Shop& shop, const std::string& readings_path,
-                 const Analysed& analysed, Json& doc, sheets::Lines& lines) {
-  std::int64_t analysis_seq = 0;
+/// What a dose leaves in the log.
+struct LoggedDose {
+  std::vector<std::int64_t> entries;  ///< the analysis, the plan, the slip
+  bool analysis_was_there = false;
+  std::optional<std::int64_t> slip;
+  std::filesystem::path path;
+};
+
+/// Logs the analysis, unless it is the last in the log, the plan made from it, and the slip where one is
+/// wanted: together or not at all.
+Result<LoggedDose> log_dose(const Context& context, const Shop& shop, const std::string& readings_path,
+                            const Analysed& analysed, const Json& doc, bool issue_slip) {
+  LoggedDose logged;
+  std::vector<logbook::NewEntry> entries;
+  const auto add = [&](logbook::EntryKind kind, Json body) -> Outcome {
+    auto entry = entry_computed(shop, readings_path, kind, std::move(body));
+    if (!entry) return entry.problems();
+    entries.push_back(*std::move(entry));
+    return Done{};
+  };
   if (analysed.logged_as) {
-    analysis_seq = *analysed.logged_as;
-    sheets::say(lines, "The analysis is already logged as entry " + std::to_string(analysis_seq) + ".");
-  } else {
-    const auto logged = log_computed(context, shop, readings_path, logbook::EntryKind::analysis,
-                                     analysis_document(shop.tank, shop.type(), analysed.analysis));
-    if (!logged) return logged.problems();
-    analysis_seq = logged->entry.seq;
-    sheets::say(lines, words(*logged));
+    logged.analysis_was_there = true;
+    logged.entries.push_back(*analysed.logged_as);
+  } else if (Outcome added = add(logbook::EntryKind::analysis,
+                                 analysis_document(shop.tank, shop.type(), analysed.analysis));
+             !added) {
+    return added.problems();
   }
-  Json plan = doc;
-  plan["analysis"] = analysis_seq;
-  const auto planned = log_computed(context, shop, readings_path, logbook::EntryKind::plan, plan);
-  if (!planned) return planned.problems();
-  doc["logged_as"] = {analysis_seq, planned->entry.seq};
-  sheets::say(lines, words(*planned));
-  return Done{};
+  if (Outcome added = add(logbook::EntryKind::plan, doc); !added) return added.problems();
+  if (issue_slip)
+    if (Outcome added =
+            add(logbook::EntryKind::slip, {{"plan", doc["plans"].front()}, {"cautions", doc["cautions"]}});
+        !added)
+      return added.problems();
+  auto opened = open_log_to_write(context);
+  if (!opened) return opened.problems();
+  OpenLog open = *std::move(opened);
+  const auto written = append_all(context, open, std::move(entries));
+  if (!written) return written.problems();
+  for (const auto& entry : *written) logged.entries.push_back(entry.seq);
+  if (issue_slip) logged.slip = logged.entries.back();
+  logged.path = open.path;
+  return logged;
 }
 
-int run(const Context& context, const std::string& tank_path, const std::string& readings_path) {
+sheets::Lines lines_of(const LoggedDose& logged) {
+  sheets::Lines lines;
+  std::string numbers;
+  for (const std::int64_t seq : logged.entries)
+    numbers += (numbers.empty() ? "" : ", ") + std::to_string(seq);
+  if (logged.analysis_was_there)
+    sheets::say(lines,
+                "The analysis is already logged as entry " + std::to_string(logged.entries.front()) + ".");
+  sheets::say(lines, "Logged in " + logged.path.string() + ": entries " + numbers + ".");
+  if (logged.slip)
+    sheets::say(lines, "Slip " + std::to_string(*logged.slip) + " is open: log each step with --slip " +
+                           std::to_string(*logged.slip) + ", then bathwright log close " +
+                           std::to_string(*logged.slip) + ".");
+  return lines;
+}
+
+/// What keeps the best plan from being carried out as it stands; empty where nothing does.
+std::string hindrance(const dosing::AdditionSheet& sheet, const Analysed& analysed) {
+  if (sheet.plans.empty() || !sheet.plans.front().feasible) return "no plan meets every aim";
+  if (sheet.plans.front().additions.empty()) return "there is nothing to add";
+  if (!analysed.analysis.suspects.empty())
+    return "a reading is suspect: " + analysed.analysis.suspects.front().what;
+  return analysed.changed_since.empty() ? "" : analysed.changed_since.front();
+}
+
+int run(const Context& context, const std::string& tank_path, const std::string& readings_path,
+        bool issue_slip) {
   const auto shop = open_shop(context, tank_path);
   if (!shop) return fail(context, shop.problems());
   const auto analysed = analyse(context, *shop, readings_path);
@@ -100,18 +148,31 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   for (const auto& level : analysis.results) uncertainty[level.quantity] = level.standard_uncertainty.v;
   const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, uncertainty);
   if (!sheet) return fail(context, sheet.problems());
+  if (issue_slip) {
+    if (context.log_file.empty())
+      return fail(context, {{Fault::bad_input, "--slip", "there is no log to number it", "--log FILE", ""}});
+    if (const std::string why = hindrance(*sheet, *analysed); !why.empty())
+      return fail(context, {{Fault::refused, "--slip", "no slip is issued: " + why, "",
+                             "Read the sheet without --slip; settle that first."}});
+  }
 
   Json doc = json_of(*shop, *sheet, analysed->changed_since);
-  sheets::Lines lines =
-      sheets::addition_sheet(shop->tank, shop->type(), analysis, *sheet, analysed->changed_since,
-                             {signer(context), context.shift, program_and_version()});
-  if (!context.log_file.empty())
-    if (Outcome logged = log_both(context, *shop, readings_path, *analysed, doc, lines); !logged)
-      return fail(context, logged.problems());
-  if (context.json)
+  std::optional<LoggedDose> logged;
+  if (!context.log_file.empty()) {
+    auto done = log_dose(context, *shop, readings_path, *analysed, doc, issue_slip);
+    if (!done) return fail(context, done.problems());
+    logged = *std::move(done);
+    doc["logged_as"] = logged->entries;
+    doc["slip"] = logged->slip ? Json(*logged->slip) : Json(nullptr);
+  }
+  if (context.json) {
     print(doc);
-  else
-    print(lines);
+  } else {
+    print(sheets::addition_sheet(
+        shop->tank, shop->type(), analysis, *sheet, analysed->changed_since,
+        {signer(context), context.shift, program_and_version(), logged ? logged->slip : std::nullopt}));
+    if (logged) print(lines_of(*logged));
+  }
   const bool nothing_to_do = !sheet->plans.empty() && sheet->plans.front().feasible &&
                              sheet->plans.front().additions.empty() && analysis.suspects.empty();
   return nothing_to_do && analysed->changed_since.empty() &&
@@ -125,11 +186,18 @@ int run(const Context& context, const std::string& tank_path, const std::string&
 void add_dose(CLI::App& program, Context& context, Action& action) {
   auto* verb =
       program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
-  add_tank_and_readings(*verb, context, action, run);
+  auto issue_slip = std::make_shared<bool>(false);
+  verb->add_flag("--slip", *issue_slip, "issues the best plan as a numbered slip of the log");
+  add_tank_and_readings(
+      *verb, context, action,
+      [issue_slip](const Context& given, const std::string& tank, const std::string& readings) {
+        return run(given, tank, readings, *issue_slip);
+      });
   add_signature(*verb, context);
   verb->footer(
       "Example: bathwright dose baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
-      "With --log the analysis and the plan are logged; additions logged since are told.\n");
+      "With --log the analysis and the plan are logged; additions logged since are told. --slip numbers the plan:\n"
+      "while that slip is open, no other is issued for the tank.\n");
 }
 
 }  // namespace bathwright::command

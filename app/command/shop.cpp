@@ -98,8 +98,7 @@ Result<bath::TankState> state_at_aims(const Shop& shop) {
                                    shop.tank.working_volume, shop.tank.temperature);
 }
 
-void add_tank_and_readings(CLI::App& verb, Context& context, Action& action,
-                           int (*run)(const Context&, const std::string& tank, const std::string& readings)) {
+void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, RunOnReadings run) {
   auto tank = std::make_shared<std::string>();
   auto readings = std::make_shared<std::string>();
   verb.add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);

@@ -27,9 +27,10 @@ struct Shop {
 /// quantities the bath type does not have, on temperatures it does not cover.
 Result<Shop> open_shop(const Context& context, const std::string& tank_path);
 
+using RunOnReadings =
+    std::function<int(const Context&, const std::string& tank, const std::string& readings)>;
 /// TANK and READINGS, for verbs that work readings out, and the action that takes them.
-void add_tank_and_readings(CLI::App& verb, Context& context, Action& action,
-                           int (*run)(const Context&, const std::string& tank, const std::string& readings));
+void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, RunOnReadings run);
 
 /// The state of a tank as the tank's own aims describe it, at the mark.
 Result<bath::TankState> state_at_aims(const Shop& shop);

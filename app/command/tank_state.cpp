@@ -65,8 +65,8 @@ Result<Analysed> analyse(const Context& context, const Shop& shop, const std::st
   return analysed;
 }
 
-Result<Logged> log_computed(const Context& context, const Shop& shop, const std::string& readings_path,
-                            logbook::EntryKind kind, Json body) {
+Result<logbook::NewEntry> entry_computed(const Shop& shop, const std::string& readings_path,
+                                         logbook::EntryKind kind, Json body) {
   for (const auto& [key, path] :
        {std::pair{"tank_file", shop.tank.file}, std::pair{"readings_file", readings_path}}) {
     std::ifstream file(path, std::ios::binary);
@@ -79,7 +79,7 @@ Result<Logged> log_computed(const Context& context, const Shop& shop, const std:
   entry.tank = shop.tank.name;
   entry.body = text_of(std::move(body));
   entry.bath_type = shop.made_with;
-  return append_to_log(context, std::move(entry));
+  return entry;
 }
 
 Result<StartingState> starting_state(const Context& context, const Shop& shop,

@@ -24,8 +24,8 @@ struct Analysed {
 };
 Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path);
 
-/// Logs what was computed from a tank's file and readings, with both files' texts and the bath type.
-Result<Logged> log_computed(const Context& context, const Shop& shop, const std::string& readings_path,
-                            logbook::EntryKind kind, Json body);
+/// What was computed from a tank's file and readings as an entry, with both files' texts and the bath type.
+Result<logbook::NewEntry> entry_computed(const Shop& shop, const std::string& readings_path,
+                                         logbook::EntryKind kind, Json body);
 
 }  // namespace bathwright::command

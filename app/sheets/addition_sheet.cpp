@@ -131,7 +131,8 @@ Lines addition_sheet(const bath::Tank& tank, const bath::BathType& type, const a
                      const Signature& signature) {
   Lines lines;
   tank_title(lines, tank, analysis.volume.v, analysis.temperature);
-  say(lines, "Addition sheet. Volume: " + analysis.volume_from + ".");
+  say(lines, (signature.slip ? "Slip " + std::to_string(*signature.slip) : std::string("Addition sheet")) +
+                 ". Volume: " + analysis.volume_from + ".");
   say(lines, deferral);
   std::vector<std::string> stopping = changed_since;
   for (const auto& suspect : analysis.suspects)

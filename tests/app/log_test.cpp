@@ -209,3 +209,24 @@ TEST_CASE("a laboratory's CSV comes in once, bad rows are told, and the log goes
   REQUIRE(bench.run("log export out.csv --decimal-comma" + log).status == 0);
   CHECK_THAT(bench.read("out.csv"), Catch::Contains("\"Ni^2+\";74,2;\"g/L\""));
 }
+
+TEST_CASE("a slip is issued from a plan, and none beside one that is open", "[failure][command]") {
+  const Bench bench;
+  const std::string dose = "dose " + app_test::tank + " " + app_test::readings + " --log shift.sqlite ";
+  CHECK_THAT(bench.run("dose --slip " + app_test::tank + " " + app_test::readings).err,
+             Catch::Contains("--log"));
+  const auto issued = bench.run(dose + "--slip --json");
+  INFO(issued.err);
+  CHECK(issued.json().at("logged_as") == json({1, 2, 3}));
+  CHECK(issued.json().at("slip") == 3);
+  const json slip = bench.run("log show 3 --json --log shift.sqlite").json().at("entry");
+  CHECK(slip.at("kind") == "slip");
+  CHECK_FALSE(slip.at("body").at("plan").at("steps").empty());
+  CHECK_THAT(slip.at("bath_type").get<std::string>(), Catch::Contains("watts-nickel"));
+  CHECK_FALSE(slip.at("body").at("inputs").at("readings_file").get<std::string>().empty());
+  const auto again = bench.run(dose + "--slip");
+  CHECK(again.status == 2);
+  CHECK_THAT(again.err, Catch::Contains("no slip is issued: Slip 3 is open"));
+  CHECK(bench.run("log list --json --log shift.sqlite").json().at("entries").size() == 3);
+  CHECK_THAT(bench.run(dose).out, Catch::Contains("Slip 3 is open") && Catch::Contains("do not add"));
+}

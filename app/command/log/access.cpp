@@ -149,6 +149,11 @@ Result<std::vector<std::string>> changes_after(const logbook::Logbook& log, cons
       changes.push_back(*entries + (entries->starts_with("entry ") ? " is" : " are") +
                         " not in these readings.");
   }
+  const auto open = log.open_slips(analysis.tank);
+  if (!open) return open.problems();
+  for (const auto& slip : *open)
+    changes.push_back("Slip " + std::to_string(slip.seq) +
+                      " is open: find out what of it is in the tank, log that and close it.");
   const auto plans = entries_after(log, analysis, logbook::EntryKind::plan);
   if (!plans) return plans.problems();
   if (!plans->empty())

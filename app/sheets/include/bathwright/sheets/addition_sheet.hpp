@@ -11,6 +11,7 @@ namespace bathwright::sheets {
 /// Who and what stands under the slip.
 struct Signature {
   std::string prepared_by, shift, program;
+  std::optional<std::int64_t> slip = {};  ///< its number, where the plan was issued as one
 };
 
 /// The best plan in full, the others in a line each.
