@@ -54,6 +54,7 @@ void add_fit(CLI::App& program, Context& context, Action& action);
 void add_forecast(CLI::App& program, Context& context, Action& action);
 void add_log(CLI::App& program, Context& context, Action& action);
 void add_path(CLI::App& program, Context& context, Action& action);
+void add_plant(CLI::App& program, Context& context, Action& action);
 void add_plugins(CLI::App& program, Context& context, Action& action);
 void add_solution(CLI::App& program, Context& context, Action& action);
 void add_sources(CLI::App& program, Context& context, Action& action);

@@ -57,6 +57,7 @@ int main(int argc, char** argv) {
   add_path(program, context, action);
   add_forecast(program, context, action);
   add_log(program, context, action);
+  add_plant(program, context, action);
   add_solution(program, context, action);
   add_fit(program, context, action);
   add_sources(program, context, action);

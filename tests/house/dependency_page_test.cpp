@@ -25,7 +25,7 @@ std::istringstream packages_of(const std::string& script, const std::string& arr
 TEST_CASE("the dependency page names every package that is installed", "[unit][house]") {
   const std::string folder = PROJECT_DIR "/third_party/";
   const std::string page = read_file(folder + "README.md");
-  for (const char* array : {"packages", "benchmark_packages"}) {
+  for (const char* array : {"packages", "test_packages", "benchmark_packages"}) {
     std::istringstream packages = packages_of(read_file(folder + "setup"), array);
     int named = 0;
     for (std::string package; packages >> package; ++named) {
