@@ -1,6 +1,7 @@
 // The shift log from the command line: written, listed, corrected, verified.
 #include <catch2/catch.hpp>
 #include <filesystem>
+#include <fstream>
 
 #include "program.hpp"
 
@@ -229,4 +230,25 @@ TEST_CASE("a slip is issued from a plan, and none beside one that is open", "[fa
   CHECK_THAT(again.err, Catch::Contains("no slip is issued: Slip 3 is open"));
   CHECK(bench.run("log list --json --log shift.sqlite").json().at("entries").size() == 3);
   CHECK_THAT(bench.run(dose).out, Catch::Contains("Slip 3 is open") && Catch::Contains("do not add"));
+}
+
+TEST_CASE("a damaged log is said, and what it still holds can be had", "[failure][command]") {
+  const Bench bench;
+  for (int i = 0; i < 30; ++i)
+    REQUIRE(bench
+                .run("log add note --tank T --body '{\"text\":\"" + std::string(800, 'x') +
+                     "\"}' --log shift.sqlite")
+                .status == 0);
+  const auto log = bench.folder() / "work/shift.sqlite";
+  {
+    constexpr std::streamoff head_of_the_file = 100;
+    std::fstream file(log, std::ios::in | std::ios::out | std::ios::binary);
+    file.write(std::string(head_of_the_file, '?').data(), head_of_the_file);
+  }
+  CHECK(bench.run("log list --log shift.sqlite").status != 0);
+  const auto run = bench.run("log salvage rest.json --json --log shift.sqlite");
+  INFO(run.out << run.err);
+  CHECK(run.json().at("entries") >= 25);
+  const json rest = json::parse(bench.read("rest.json"));
+  CHECK(rest.at("entries").back().at("seq") == 30);
 }

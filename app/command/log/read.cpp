@@ -1,4 +1,5 @@
 // bathwright log list | show | verify | anchor | export: what stands in the shift log.
+#include <bathwright/logbook/salvage.hpp>
 #include <bathwright/sheets/log_csv.hpp>
 #include <bathwright/sheets/log_sheet.hpp>
 #include <fstream>
@@ -177,6 +178,35 @@ int anchor(const Context& context, const std::string& file) {
   return Exit::all_well;
 }
 
+int salvage(const Context& context, const std::string& file) {
+  const auto entries = logbook::salvage(log_path(context));
+  if (!entries) return fail(context, entries.problems());
+  Json doc = document({});
+  doc["entries"] = Json::array();
+  for (const auto& entry : *entries) doc["entries"].push_back(json_of(entry));
+  std::ofstream out(file, std::ios::binary);
+  out << text_of(doc, 1) << '\n';
+  out.close();
+  if (!out)
+    return fail(context,
+                {{Fault::io, file, "the file cannot be written", "", "Check the folder and the disk."}});
+  const std::string found = std::to_string(entries->size()) + " whole entries" +
+                            (entries->empty() ? std::string()
+                                              : " between " + std::to_string(entries->front().seq) + " and " +
+                                                    std::to_string(entries->back().seq));
+  if (context.json) {
+    Json answer = document({});
+    answer["entries"] = entries->size();
+    answer["file"] = file;
+    print(answer);
+  } else {
+    print(sheets::Lines{
+        found + " found and written to " + file + ".",
+        "Each proves itself by its hash. What is missing between them cannot be had from this file."});
+  }
+  return Exit::all_well;
+}
+
 void add_filter(CLI::App& verb, ListOptions& options) {
   verb.add_option("--tank", options.tank, "of this tank only");
   verb.add_option("--kind", options.kind, "of this kind only: analysis, plan, addition, ...");
@@ -267,6 +297,15 @@ void add_reading(CLI::App& log, Context& context, Action& action) {
   anchor_verb->add_option("FILE", *anchor_path, "a line is added to it")->required();
   anchor_verb->callback([&context, &action, anchor_path] {
     action = [&context, anchor_path] { return anchor(context, *anchor_path); };
+  });
+
+  auto* salvage_verb =
+      log.add_subcommand("salvage", "what a damaged log still holds, as JSON; the log stays as it is")
+          ->fallthrough();
+  auto salvaged = std::make_shared<std::string>();
+  salvage_verb->add_option("FILE", *salvaged, "the JSON file to write")->required();
+  salvage_verb->callback([&context, &action, salvaged] {
+    action = [&context, salvaged] { return salvage(context, *salvaged); };
   });
 
   auto* export_verb = log.add_subcommand("export", "entries as CSV, for a spreadsheet")->fallthrough();

@@ -8,7 +8,7 @@
 namespace bathwright::command::log_verb {
 
 /// Each adds its verbs below `log`.
-void add_reading(CLI::App& log, Context& context, Action& action);  ///< list, show, verify, anchor, export
+void add_reading(CLI::App& log, Context& context, Action& action);  ///< list, show, verify, anchor, salvage, export
 void add_writing(CLI::App& log, Context& context, Action& action);  ///< add, correct, close
 void add_import(CLI::App& log, Context& context, Action& action);   ///< import
 void add_people(CLI::App& log, Context& context, Action& action);   ///< people
