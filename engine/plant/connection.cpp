@@ -95,7 +95,7 @@ Result<Connection> Connection::from_file(const std::filesystem::path& file, cons
                    std::string("for example: ") + std::string(example)};
   if ((about.st_mode & (S_IRWXG | S_IRWXO)) != 0)
     return Problem{Fault::refused, file.string(), "others may use this file, and it may hold a password",
-                   "mode 0600", "chmod 600 " + file.string()};
+                   "mode 0600", "take it from them: chmod 600 " + file.string()};
   std::ifstream in(file);
   const std::string text{std::istreambuf_iterator<char>(in), {}};
   if (!in) return Problem{Fault::io, file.string(), "cannot be read", "", "check who owns it"};
