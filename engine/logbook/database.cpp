@@ -3,6 +3,7 @@
 #include <fmt/format.h>
 #include <unistd.h>
 
+#include <algorithm>
 #include <cerrno>
 #include <cstring>
 #include <utility>
@@ -42,6 +43,14 @@ std::optional<Problem> problem_with_path(const fs::path& path, OpenMode mode) {
   if (status.type() == fs::file_type::not_found && mode != OpenMode::create)
     return io(path.string(), "there is no such file", "check the path, or start a new logbook there");
   return std::nullopt;
+}
+
+/// What SQLite last complained about. It quotes the file, which may hold anything where it is damaged.
+std::string complaint(sqlite3* connection) {
+  std::string words = sqlite3_errmsg(connection);
+  std::replace_if(
+      words.begin(), words.end(), [](char c) { return c < ' ' || c > '~'; }, '?');
+  return words;
 }
 
 Problem damaged(const std::string& name, std::string_view how) {
@@ -234,7 +243,7 @@ Problem Database::problem() const {
     case SQLITE_NOTADB:
       return {Fault::bad_input, name_, "this file is not a logbook", "a logbook file", "check the path"};
     case SQLITE_CORRUPT:
-      return damaged(name_, sqlite3_errmsg(connection_.get()));
+      return damaged(name_, complaint(connection_.get()));
     case SQLITE_BUSY:
     case SQLITE_LOCKED:
       return io(name_,
@@ -251,7 +260,7 @@ Problem Database::problem() const {
                 "ask for permission to the file and its folder, or use another folder");
     default:
       return io(name_,
-                fmt::format("the logbook could not be used: {}{}", sqlite3_errmsg(connection_.get()),
+                fmt::format("the logbook could not be used: {}{}", complaint(connection_.get()),
                             (extended & 0xFF) == SQLITE_IOERR && system != 0
                                 ? fmt::format(" ({})", std::strerror(system))
                                 : ""),
@@ -271,9 +280,10 @@ Outcome WriteTransaction::begin() {
 
 Outcome WriteTransaction::commit() {
   if (!still_in_place(database_.connection_.get()))
-    return io(database_.name_,
-              "the file or its -wal was moved or removed while it was open; nothing was logged",
-              "put it back, or open the logbook where it is now, and log the entry again");
+    return io(
+        database_.name_,
+        "the file or its -wal is no longer to be found where it was opened; nothing was logged",
+        "put it back, give access to its folder, or open the logbook where it is now; then log the entry again");
   auto committed = database_.execute("COMMIT");
   if (committed) open_ = false;
   return committed;

@@ -105,20 +105,36 @@ struct Outcomes {
   std::int64_t listed = 0;
 };
 
+/// A message with the number of the frame left out, so that each wording is told once.
+std::string without_number(std::string message) {
+  const auto begin =
+      std::find_if(message.begin(), message.end(), [](char c) { return c >= '0' && c <= '9'; });
+  const auto end = std::find_if(begin, message.end(), [](char c) { return c < '0' || c > '9'; });
+  if (begin != message.end()) message.replace(begin, end, "N");
+  return message;
+}
+
+/// Takes down what was said; nothing of the damaged bytes may come through to the person.
+void said(const std::string& message, const std::string& where, FaultRow& row) {
+  row.messages.insert(without_number(message));
+  if (std::any_of(message.begin(), message.end(), [](char c) { return c < ' ' || c > '~'; }))
+    row.breaks(where, "the message holds bytes of the damage");
+}
+
 /// Reads the log as a person would and judges what came.
 void read_damaged(const fs::path& path, const Sound& sound, std::size_t may_be_cut, const std::string& where,
                   FaultRow& row, Outcomes& outcomes) {
   const auto log = open_log(path, OpenMode::read_only);
   if (!log) {
     ++outcomes.said_by_open;
-    row.messages.insert(words(log.problems(), path));
+    said(words(log.problems(), path), where, row);
     return;
   }
   const auto entries = log->list();
   const auto report = log->verify();
   if (!entries) {
     ++outcomes.said_by_list;
-    row.messages.insert(words(entries.problems(), path));
+    said(words(entries.problems(), path), where, row);
     if (report.ok) row.breaks(where, "verify is content though the list is not");
     return;
   }

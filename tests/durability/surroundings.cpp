@@ -128,7 +128,7 @@ std::vector<FaultRow> met_by_a_writer() {
     fs::create_directory(folder);
     fs::copy_file(folder.string() + "-old/shop.log", folder / "shop.log");
   };
-  const std::string moved = "moved or removed";
+  const std::string moved = "no longer to be found";
   std::vector<FaultRow> rows;
   for (const Meeting& meeting : std::vector<Meeting>{
            {"folder made read-only under an open log", "chmod of the folder; the writer goes on",
