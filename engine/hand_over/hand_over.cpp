@@ -42,9 +42,13 @@ Result<std::map<std::string, shifts::UtcTime>> last_analysed(const logbook::Logb
     const auto entries = log.list(filter);
     if (!entries) return entries.problems();
     if (entries->empty()) break;
-    for (const auto& entry : *entries)
+    for (const auto& entry : *entries) {
+      const auto corrected = log.is_corrected(entry.seq);
+      if (!corrected) return corrected.problems();
+      if (*corrected) continue;
       if (const auto time = logbook::utc_from_iso(entry.happened.empty() ? entry.at : entry.happened))
         for (const auto& [quantity, value] : found_in(entry)) last.try_emplace(quantity, *time);
+    }
     filter.after_seq = entries->back().seq;
   }
   return last;
@@ -90,8 +94,12 @@ Result<HandOver> hand_over(const logbook::Logbook& log, const shifts::Calendar& 
   std::vector<shifts::Due> all;
   for (const bath::Tank& tank : tanks) {
     const logbook::Entry* analysis = nullptr;
-    for (const auto& entry : told.entries)
-      if (entry.tank == tank.name && entry.kind == logbook::EntryKind::analysis) analysis = &entry;
+    for (const auto& entry : told.entries) {
+      if (entry.tank != tank.name || entry.kind != logbook::EntryKind::analysis) continue;
+      const auto corrected = log.is_corrected(entry.seq);
+      if (!corrected) return corrected.problems();
+      if (!*corrected) analysis = &entry;
+    }
     if (analysis) judge(*analysis, tank, told.out_of_window);
     const auto last = last_analysed(log, tank);
     if (!last) return last.problems();

@@ -137,6 +137,12 @@ Result<std::optional<Entry>> Logbook::latest(const std::string& tank, EntryKind 
                           {tank, std::string(name(kind))});
 }
 
+Result<bool> Logbook::is_corrected(std::int64_t seq) const {
+  const auto correction = state_->first_of("WHERE about = ? AND kind = 'correction' LIMIT 1", {seq});
+  if (!correction) return correction.problems();
+  return correction->has_value();
+}
+
 Result<std::vector<Entry>> Logbook::open_slips(const std::string& tank) const {
   return state_->open_slips(tank);
 }

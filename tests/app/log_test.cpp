@@ -252,3 +252,14 @@ TEST_CASE("a damaged log is said, and what it still holds can be had", "[failure
   const json rest = json::parse(bench.read("rest.json"));
   CHECK(rest.at("entries").back().at("seq") == 30);
 }
+
+TEST_CASE("a corrected analysis is no state to start from", "[failure][command]") {
+  const Bench bench;
+  const std::string log = " --log shift.sqlite";
+  (void)bench.run("analyse " + app_test::tank + " " + app_test::readings + log);
+  CHECK_THAT(bench.run("tank " + app_test::tank + log).out, Catch::Contains("log entry 1"));
+  REQUIRE(bench.run("log correct 1 --reason 'sample of another tank'" + log).status == 0);
+  const auto run = bench.run("tank " + app_test::tank + log);
+  CHECK(run.status == 2);
+  CHECK_THAT(run.err, Catch::Contains("analysis 1") && Catch::Contains("was corrected"));
+}

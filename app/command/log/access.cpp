@@ -208,7 +208,9 @@ Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const 
   if (!entries) return entries.problems();
   std::string passed_over;
   for (const auto& entry : *entries) {
-    auto last = analysis_in(entry);
+    const auto corrected = log->is_corrected(entry.seq);
+    if (!corrected) return corrected.problems();
+    auto last = *corrected ? std::nullopt : analysis_in(entry);
     if (!last) {
       passed_over = std::to_string(entry.seq) + (passed_over.empty() ? "" : ", ") + passed_over;
       continue;
@@ -219,11 +221,12 @@ Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const 
     if (!passed_over.empty())
       last->changed_since.push_back(
           "Analysis " + passed_over +
-          " is newer but does not give levels, volume, temperature and pH together.");
+          " is newer, but was corrected or does not give levels, volume, temperature and pH together.");
     return std::optional<LastAnalysis>{std::move(last)};
   }
   if (passed_over.empty()) return std::optional<LastAnalysis>{};
-  return Problem{Fault::bad_input, "log, analysis " + passed_over, "does not say what a tank's state needs",
+  return Problem{Fault::bad_input, "log, analysis " + passed_over,
+                 "was corrected, or does not say what a tank's state needs",
                  "levels, volume, temperature and pH", "Analyse the tank, or give readings."};
 }
 

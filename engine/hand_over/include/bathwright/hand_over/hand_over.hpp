@@ -23,7 +23,7 @@ struct HandOver {
   shifts::ShiftSpan shift;
   std::vector<logbook::Entry> entries;     ///< logged during the shift, oldest first
   std::vector<logbook::Entry> open_slips;  ///< of whatever shift
-  std::vector<OutOfWindow> out_of_window;  ///< by the last analysis of each tank in the shift
+  std::vector<OutOfWindow> out_of_window;  ///< by the last uncorrected analysis of each tank in the shift
   std::vector<shifts::Due> due;            ///< before the end of the next shift, the earliest first
   std::optional<logbook::Anchor> head;     ///< of the log as it was read
 };

@@ -128,6 +128,9 @@ class Logbook {
   /// The entry of highest sequence of that tank and kind, if there is one.
   [[nodiscard]] Result<std::optional<Entry>> latest(const std::string& tank, EntryKind kind) const;
 
+  /// Whether a later entry corrects that one.
+  [[nodiscard]] Result<bool> is_corrected(std::int64_t seq) const;
+
   /// Slips not closed yet, of one tank or of all, oldest first.
   [[nodiscard]] Result<std::vector<Entry>> open_slips(const std::string& tank = {}) const;
 
