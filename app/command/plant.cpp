@@ -199,7 +199,7 @@ int fetch(const Context& context, const PlantOptions& options, const std::string
     if (chain.chain.starts_with(beginning)) meant.push_back(chain.chain);
   if (meant.size() != 1)
     return fail(context, {{Fault::bad_input, beginning, meant.empty() ? "names no log" : "names several logs",
-                           "the name of one log, or its beginning", "bathwright plant logs lists them."}});
+                           "the name of one log, or its beginning", "See bathwright plant logs for them."}});
   const auto entries = plant.fetch(meant.front());
   if (!entries) return fail(context, entries.problems());
   auto log = logbook::Logbook::open(file, logbook::OpenMode::create, wall_clock());

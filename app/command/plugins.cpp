@@ -235,7 +235,7 @@ int show(const Context& context, const std::string& id) {
   const bath::BathType* type = types.find(id);
   if (!type)
     return fail(context, {{Fault::bad_input, id, "is not a bath type at hand", "",
-                           "bathwright plugins list says what was found and refused."}});
+                           "See bathwright plugins list for what was found and refused."}});
   if (context.json)
     print(json_of(*type));
   else

@@ -160,7 +160,7 @@ int check(const Context& context, const Options& options) {
   if (all.empty())
     return fail(context, {{Fault::bad_input, options.all ? "plugins" : options.which,
                            "is not a bath type at hand", "an id, or a file .bathtype.so or .bathtype.toml",
-                           "bathwright plugins list says what was found and refused."}});
+                           "See bathwright plugins list for what was found and refused."}});
   (context.json ? print_json : print_text)(all);
   return count(all, &Check::failed) == 0 ? Exit::all_well : Exit::finding;
 }

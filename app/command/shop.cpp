@@ -24,7 +24,7 @@ Problem unknown_bath_type(const bath::Tank& tank, const plugin_host::BathTypes& 
   return {
       Fault::bad_input, tank.file + ": bath_type", "no bath type \"" + tank.bath_type + "\" is at hand",
       ids.empty() ? "a bath type; none was found" : "one of " + joined(ids),
-      close ? "Did you mean " + *close + "?" : "bathwright plugins list says what was found and refused."};
+      close ? "Did you mean " + *close + "?" : "See bathwright plugins list for what was found and refused."};
 }
 
 Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {

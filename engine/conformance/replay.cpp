@@ -11,7 +11,7 @@ namespace {
 
 Problem absent(const Expectation& expected, std::string_view kind) {
   return {Fault::bad_input, expected.where, "there is no " + std::string(kind) + " \"" + expected.of + '"',
-          "one of the bath type", "bathwright plugins show lists them."};
+          "one of the bath type", "See bathwright plugins show for them."};
 }
 
 template <class Rows, class Id>

@@ -49,10 +49,10 @@ Candidate candidate_of(const FoundFile& found, const Places& places, const Allow
   const std::string path = found.path.string(), command = "bathwright plugins allow '" + path + "'";
   if (!is_allowed(candidate.listed.sha256, places, list))
     candidate.stop(State::not_allowed, {{Fault::refused, path, "is not allowed yet; nothing of it has run",
-                                         "", command + " shows what it is and asks."}});
+                                         "", "Run " + command + "; it shows what it is and asks."}});
   else if (quarantine.holds(candidate.listed.sha256))
     candidate.stop(State::quarantined, {{Fault::refused, path, "the program died while loading it", "",
-                                         command + " probes it again and releases it."}});
+                                         "Run " + command + "; it probes it again and releases it."}});
   return candidate;
 }
 
