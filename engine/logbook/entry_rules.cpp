@@ -2,11 +2,11 @@
 
 #include <fmt/format.h>
 
-#include <cstdint>
 #include <nlohmann/json.hpp>
 #include <optional>
 #include <string>
 
+#include "bathwright/base/letters.hpp"
 #include "roll.hpp"
 
 namespace bathwright::logbook {
@@ -15,25 +15,15 @@ namespace {
 constexpr std::size_t max_text_bytes = 200;
 constexpr std::size_t max_body_bytes = std::size_t{1} << 20;
 
-/// Takes the first code point off `rest`; nothing when it does not start with well-formed UTF-8 (RFC 3629: no
-/// overlong forms, no surrogates, nothing above U+10FFFF).
-std::optional<char32_t> take_code_point(std::string_view& rest) {
-  const auto byte = [&](std::size_t i) { return static_cast<unsigned char>(rest[i]); };
-  const unsigned char first = byte(0);
-  const std::size_t length = first < 0x80 ? 1 : first < 0xC2 ? 0 : first < 0xE0 ? 2 : first < 0xF0 ? 3 : 4;
-  if (length == 0 || first > 0xF4 || rest.size() < length) return std::nullopt;
-  char32_t point = length == 1 ? first : first & (0x7Fu >> length);
-  for (std::size_t i = 1; i < length; ++i) {
-    if ((byte(i) & 0xC0) != 0x80) return std::nullopt;
-    point = point << 6 | (byte(i) & 0x3Fu);
-  }
-  const bool overlong = (length == 3 && point < 0x800) || (length == 4 && point < 0x10000);
-  if (overlong || (point >= 0xD800 && point <= 0xDFFF) || point > 0x10FFFF) return std::nullopt;
-  rest.remove_prefix(length);
-  return point;
+/// The code point of a letter of UTF-8 that is a control character: C0, delete, C1.
+std::optional<unsigned> control_character(std::string_view letter) {
+  const auto byte = [&](std::size_t i) {
+    return static_cast<unsigned>(static_cast<unsigned char>(letter[i]));
+  };
+  if (letter.size() == 1 && (byte(0) < 0x20 || byte(0) == 0x7F)) return byte(0);
+  if (letter.size() == 2 && byte(0) == 0xC2 && byte(1) <= 0x9F) return byte(1);
+  return std::nullopt;
 }
-
-bool is_control(char32_t point) { return point < 0x20 || (point >= 0x7F && point <= 0x9F); }
 
 Problem bad(std::string_view field, std::string what, std::string expected, std::string try_this = {}) {
   return {Fault::bad_input, std::string(field), std::move(what), std::move(expected), std::move(try_this)};
@@ -111,17 +101,18 @@ void check_text(std::string_view field, std::string_view text, Presence presence
   if (text.size() > max_text_bytes)
     problems.push_back(
         bad(field, fmt::format("{} bytes", text.size()), fmt::format("at most {} bytes", max_text_bytes)));
-  std::string_view rest = text;
-  while (!rest.empty()) {
-    const std::size_t position = text.size() - rest.size();
-    const auto point = take_code_point(rest);
-    if (point && !is_control(*point)) continue;
-    problems.push_back(point ? bad(field,
-                                   fmt::format("control character U+{:04X} at byte {}",
-                                               static_cast<std::uint32_t>(*point), position),
-                                   "printable text on one line")
-                             : bad(field, fmt::format("byte {} is not UTF-8", position), "text in UTF-8"));
-    return;
+  for (std::size_t at = 0; at < text.size();) {
+    const std::size_t length = letter_length(text.substr(at));
+    if (length == 0) {
+      problems.push_back(bad(field, fmt::format("byte {} is not UTF-8", at), "text in UTF-8"));
+      return;
+    }
+    if (const auto control = control_character(text.substr(at, length))) {
+      problems.push_back(bad(field, fmt::format("control character U+{:04X} at byte {}", *control, at),
+                             "printable text on one line"));
+      return;
+    }
+    at += length;
   }
 }
 
