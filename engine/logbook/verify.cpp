@@ -94,11 +94,12 @@ class Walk {
     (void)roll_.take(entry);  // a body that tells nobody was refused above
     if (first_person) by_key = key_of(entry.by);
 
+    const bool by_signs = first_person || !entry.role.empty() || !entry.signature.empty();
+    const bool witness_signs = !entry.witness.empty() || !entry.witness_signature.empty();
+    if (!by_signs && !witness_signs) return;
     const std::string digest = content_digest(entry);
-    if (first_person || !entry.role.empty() || !entry.signature.empty())
-      signatures_.check({entry.seq, by_key, digest, entry.signature});
-    if (!entry.witness.empty() || !entry.witness_signature.empty())
-      signatures_.check({entry.seq, witness_key, digest, entry.witness_signature});
+    if (by_signs) signatures_.check({entry.seq, by_key, digest, entry.signature});
+    if (witness_signs) signatures_.check({entry.seq, witness_key, digest, entry.witness_signature});
   }
 
   std::string key_of(const std::string& name) const {
