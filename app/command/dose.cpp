@@ -144,9 +144,10 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   const auto analysed = analyse(context, *shop, readings_path);
   if (!analysed) return fail(context, analysed.problems());
   const analysis::Analysis& analysis = analysed->analysis;
-  std::map<std::string, double> uncertainty;
-  for (const auto& level : analysis.results) uncertainty[level.quantity] = level.standard_uncertainty.v;
-  const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, uncertainty);
+  dosing::Request request;
+  for (const auto& level : analysis.results)
+    request.uncertainty[level.quantity] = level.standard_uncertainty.v;
+  const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, request);
   if (!sheet) return fail(context, sheet.problems());
   if (issue_slip) {
     if (context.log_file.empty())

@@ -312,7 +312,7 @@ Result<Plan> least_cost_plan(const Tank& tank, const Chemistry& chemistry, const
 }  // namespace
 
 Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistry, const TankState& now,
-                                     const std::map<std::string, double>& uncertainty) {
+                                     const Request& request) {
   AdditionSheet sheet;
   auto view = chemistry.view(now);
   if (!view) return view.problems();
@@ -341,7 +341,7 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
                      aim.quantity + " is not a quantity of " + chemistry.type().name, "", ""};
 
   mark_only_sources(tank, chemistry, supplies);
-  auto plan = least_cost_plan(tank, chemistry, now, sheet.now, supplies, uncertainty);
+  auto plan = least_cost_plan(tank, chemistry, now, sheet.now, supplies, request.uncertainty);
   if (!plan) return plan.problems();
   sheet.cautions = cautions_for(tank, chemistry.type(), *plan);
   sheet.cautions.insert(sheet.cautions.end(), warnings.begin(), warnings.end());

@@ -10,8 +10,8 @@ using demo::must;
 namespace {
 
 dosing::AdditionSheet planned(const bath::TankState& state, const bath::Tank& tank = demo::tank(),
-                              const std::map<std::string, double>& uncertainty = {}) {
-  return must(dosing::plan_additions(tank, demo::chemistry(), state, uncertainty));
+                              const dosing::Request& request = {}) {
+  return must(dosing::plan_additions(tank, demo::chemistry(), state, request));
 }
 
 double kg_of(const dosing::Plan& plan, const std::string& chemical) {
@@ -240,7 +240,7 @@ TEST_CASE("boric acid that an idle tank cannot hold is told at every step", "[un
 TEST_CASE("the chance to end inside the window", "[unit][dosing]") {
   // One quantity off its window's middle: nickel chloride ends at 50, window 40 to 60, u = 5 g/L now in the
   // same volume: P = 2 Phi(2) - 1 = 0.9545 (normal table).
-  const auto sheet = planned(demo::state(280, 50, 42), demo::tank(), {{"NiCl2.6H2O", 5.0}});
+  const auto sheet = planned(demo::state(280, 50, 42), demo::tank(), {.uncertainty = {{"NiCl2.6H2O", 5.0}}});
   REQUIRE(sheet.plans.front().probability_in_window);
   CHECK(*sheet.plans.front().probability_in_window == Approx(0.9545).margin(1e-4).epsilon(0));
   CHECK_FALSE(planned(demo::state(280, 50, 42)).plans.front().probability_in_window);

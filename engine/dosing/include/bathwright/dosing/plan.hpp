@@ -39,9 +39,11 @@ struct Step {
 
 struct Plan {
   std::string kind;       ///< "least cost"
+  std::string reason;     ///< what sets it apart from the others: "cheapest of those that reach every aim"
   bool feasible = false;  ///< every level ends inside its window, every check passed that stops a plan
   double cost = 0;
   double salt_load_mol = 0;  ///< ions brought in, mol: what makes the next bleed larger
+  double decant_L = 0;       ///< bath to take out before anything is added; it is waste
   /// Chance that every controlled quantity ends inside its window, from the analysis' uncertainty alone,
   /// errors taken as independent and normal; nothing where no uncertainty was given.
   std::optional<double> probability_in_window;
@@ -51,6 +53,8 @@ struct Plan {
   bath::TankState final_state;
   std::vector<std::string>
       unmet;  ///< aims that cannot be reached with this shelf, by how much, whether inside
+  std::vector<std::string> left_alone;  ///< what lies inside the noise of its analysis and is not corrected
+  std::vector<std::string> conflicts;   ///< why windows cannot be met: the limits in each other's way
 };
 
 struct Refusal {
@@ -64,15 +68,22 @@ struct AdditionSheet {
   std::vector<std::string> cautions;
 };
 
-/// Plans the additions that bring the tank from `now` to its aims at least cost, filled to the mark.
-///   uncertainty  one standard uncertainty of the present level, g/L by quantity id (may be empty)
+/// What plans are asked for, beside what the tank file says.
+struct Request {
+  /// One standard uncertainty of the present level, g/L by quantity id; may be empty.
+  std::map<std::string, double> uncertainty;
+  bool dead_band = true;  ///< false: to the aim, however near the tank is already
+  bool weighable = true;  ///< amounts as a shop's scales and jugs show them; false: unrounded
+  int most_plans = 4;     ///< at least 1
+};
+
+/// Plans the additions that bring the tank from `now` to its aims, filled to the mark: the best plan first,
+/// then those that differ in kind.
 /// Amounts are >= 0; hydrate water, the water of liquids and displacement are in the volume; pH by full
-/// equilibrium. Each step is speciated at the working and the idle temperature. A linear programme in the
-/// amounts is solved again with the true volume and acid demand until neither moves (1e-9 relative); first
-/// the aims (relative deviation), then the cost. An aim that cannot be reached is reported in `unmet` with
-/// the nearest plan, not as an error. Fails when the state itself cannot be solved.
+/// equilibrium. Each step is speciated at the working and the idle temperature. An aim that cannot be reached
+/// is reported in `unmet` with the nearest plan, not as an error. Fails when the state itself cannot be
+/// solved.
 Result<AdditionSheet> plan_additions(const bath::Tank& tank, const bath::Chemistry& chemistry,
-                                     const bath::TankState& now,
-                                     const std::map<std::string, double>& uncertainty = {});
+                                     const bath::TankState& now, const Request& request = {});
 
 }  // namespace bathwright::dosing
