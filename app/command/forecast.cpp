@@ -2,7 +2,8 @@
 #include <unistd.h>
 
 #include <algorithm>
-#include <bathwright/sheets/forecast_sheet.hpp>
+#include <bathwright/charts/page_file.hpp>
+#include <bathwright/sheets/forecast_charts.hpp>
 #include <bathwright/shopfiles/policy_file.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
@@ -19,7 +20,7 @@ namespace {
 using forecast::Forecast;
 
 struct Options {
-  std::string tank, policy, readings, csv;
+  std::string tank, policy, readings, csv, chart;
   int samples = 200;
   std::uint64_t seed = 1;
 };
@@ -162,6 +163,9 @@ int run(const Context& context, const Options& options) {
   if (!options.csv.empty())
     if (const Outcome written = write_csv(options.csv, page); !written)
       return fail(context, written.problems());
+  if (!options.chart.empty())
+    if (const Outcome written = charts::write_page(options.chart, sheets::forecast_charts(page)); !written)
+      return fail(context, written.problems());
   if (context.json)
     print(json_of(page));
   else
@@ -186,6 +190,7 @@ void add_forecast(CLI::App& program, Context& context, Action& action) {
       ->check(CLI::Range(0, 100000));
   verb->add_option("--seed", options->seed, "of the samples: the same seed, the same figures");
   verb->add_option("--csv", options->csv, "also write one row a day to this file");
+  verb->add_option("--chart", options->chart, "also draw it: FILE.svg, FILE.png or FILE.pdf");
   verb->footer("Example: bathwright forecast baths/al-1.toml baths/policies/al-1.toml\n");
   verb->callback(
       [&context, &action, options] { action = [&context, options] { return run(context, *options); }; });

@@ -9,7 +9,7 @@ TEST_CASE("a forecast says when each limit is met, and keeps its balance", "[uni
   const Bench bench;
   const std::string files =
       "forecast " PROJECT_DIR "/baths/al-1.toml " PROJECT_DIR "/baths/policies/al-1.toml ";
-  const auto run = bench.run(files + "--samples 20 --csv days.csv --json");
+  const auto run = bench.run(files + "--samples 20 --csv days.csv --chart days.svg --json");
   INFO(run.err);
   REQUIRE(run.status == 1);  // a limit is met
   const auto doc = run.json();
@@ -24,6 +24,7 @@ TEST_CASE("a forecast says when each limit is met, and keeps its balance", "[uni
     }
   CHECK(aluminium);
   CHECK_FALSE(doc.at("bleed_to_hold").empty());
+  CHECK(bench.read("days.svg").find("<svg") != std::string::npos);
   CHECK(doc.at("series").size() == 121);
   for (const auto& [what, residual] : doc.at("balance").items()) {
     INFO(what);

@@ -1,0 +1,20 @@
+// The colours and what they mean, told once for the screen and for paper. No meaning by colour alone: a
+// computed line is also dashed, a limit also hatched and named.
+#pragma once
+
+#include <bathwright/charts/canvas.hpp>
+
+namespace bathwright::charts {
+
+struct Palette {
+  Colour page{0xF6, 0xF5, 0xF1}, card{0xFF, 0xFF, 0xFF}, rule{0xD9, 0xD6, 0xCE};
+  Colour ink{0x1E, 0x2A, 0x32}, quiet{0x66, 0x72, 0x7A};
+  Colour accent{0x0C, 0x5A, 0x6E};     ///< found; the one thing to do next
+  Colour predicted{0x7A, 0x4E, 0x9B};  ///< computed for the future
+  Colour act{0xB4, 0x5F, 0x06};
+  Colour stop{0x9B, 0x1C, 0x31};
+};
+
+inline constexpr Palette day_palette{};
+
+}  // namespace bathwright::charts
