@@ -21,10 +21,17 @@ using units::show;
 class Evaluation {
  public:
   Evaluation(const Readings& readings, const bath::Tank& tank, const bath::Chemistry& chemistry,
-             const std::optional<Book>& book)
-      : readings_(readings), tank_(tank), chemistry_(chemistry), type_(chemistry.type()), book_(book) {}
+             const std::optional<Book>& book, double in_tank_per_in_sample)
+      : readings_(readings),
+        tank_(tank),
+        chemistry_(chemistry),
+        type_(chemistry.type()),
+        book_(book),
+        in_tank_per_in_sample_(in_tank_per_in_sample) {}
 
   Result<Analysis> run() {
+    analysis_.sample_number = readings_.sample_number;
+    analysis_.sampled_by = readings_.sampled_by;
     find_volume();
     find_temperature();
     find_pH();
@@ -66,6 +73,7 @@ class Evaluation {
   const bath::Chemistry& chemistry_;
   const bath::BathType& type_;
   const std::optional<Book>& book_;
+  const double in_tank_per_in_sample_;  ///< level in the hot tank over that in the cooled sample
 
   Analysis analysis_;
   Problems problems_;
@@ -73,27 +81,33 @@ class Evaluation {
   std::vector<Finding> open_, used_, unused_;
 };
 
+// Each way of finding the volume has its uncertainty: the tank's own measure, the level, or that nobody
+// looked.
 void Evaluation::find_volume() {
+  const double mark = tank_.working_volume.v;
+  const double u_mark = uncertainty_term("volume-at-mark") * mark;
   if (readings_.volume && readings_.level_below_mark) {
     refuse("volume", "both a volume and a level below the mark are given", "one of them", "Leave one out.");
   } else if (readings_.volume) {
     analysis_.volume = *readings_.volume;
     analysis_.volume_from = "as read";
+    analysis_.u_volume_L = uncertainty_term("volume-as-read") * readings_.volume->v;
   } else if (readings_.level_below_mark) {
     if (!tank_.surface) {
       refuse("level_below_mark", tank_.name + " has no surface area to turn a level into a volume", "",
              "Give the volume, or the liquid surface in the tank file.");
       return;
     }
-    analysis_.volume = {tank_.working_volume.v -
-                        readings_.level_below_mark->v * tank_.surface->v};  // dm * dm2 = L
+    analysis_.volume = {mark - readings_.level_below_mark->v * tank_.surface->v};  // dm * dm2 = L
     analysis_.volume_from = fmt::format(
-        "{:g} L at the mark, {} low on {:g} dm2", tank_.working_volume.v,
+        "{:g} L at the mark, {} low on {:g} dm2", mark,
         readings_.written.text("level_below_mark", fmt::format("{:g} dm", readings_.level_below_mark->v)),
         tank_.surface->v);
+    analysis_.u_volume_L = std::hypot(u_mark, uncertainty_term("level") * tank_.surface->v);
   } else {
     analysis_.volume = tank_.working_volume;
     analysis_.volume_from = "taken as the working volume";
+    analysis_.u_volume_L = std::hypot(u_mark, uncertainty_term("volume-taken") * mark);
     note("no volume or level given: the tank is taken as filled to the mark, " + show(tank_.working_volume));
   }
   if (problems_.empty() && (!(analysis_.volume.v > 0) || !std::isfinite(analysis_.volume.v)))
@@ -107,14 +121,24 @@ void Evaluation::find_temperature() {
   if (!readings_.temperature)
     note("no temperature given: taken as the tank's, " + show(tank_.temperature, "degC", 3));
 
+  constexpr double noticeable = 0.001;
+  const auto per_cent = [](double ratio) { return 100 * std::abs(ratio - 1); };
+  if (readings_.sample_temperature) {
+    if (std::abs(in_tank_per_in_sample_ - 1) > noticeable)
+      note(fmt::format("pipetted at {}: levels are {:.1f} % {} in the tank, at {} (density of this bath)",
+                       show(*readings_.sample_temperature, "degC", 3), per_cent(in_tank_per_in_sample_),
+                       in_tank_per_in_sample_ < 1 ? "lower" : "higher",
+                       show(analysis_.temperature, "degC", 3)));
+    return;
+  }
   constexpr units::Celsius laboratory{20};
   const double expansion = matter::water_density(laboratory) / matter::water_density(analysis_.temperature);
-  if (std::abs(expansion - 1) > 0.001) {
+  if (std::abs(expansion - 1) > noticeable) {
     note(
         fmt::format("levels are taken to hold at {}; of a sample that was pipetted at {} they are {:.1f} % "
                     "too {} (expansion of water)",
-                    show(analysis_.temperature, "degC", 3), show(laboratory, "degC", 3),
-                    100 * std::abs(expansion - 1), expansion > 1 ? "high" : "low"));
+                    show(analysis_.temperature, "degC", 3), show(laboratory, "degC", 3), per_cent(expansion),
+                    expansion > 1 ? "high" : "low"));
   }
 }
 
@@ -153,13 +177,18 @@ void Evaluation::take_all_that_settle() {
 }
 
 void Evaluation::take_findings() {
-  auto findings = findings_of(readings_, type_);
-  if (!findings) {
-    problems_.insert(problems_.end(), findings.problems().begin(), findings.problems().end());
+  auto found = findings_of(readings_, type_);
+  if (!found) {
+    problems_.insert(problems_.end(), found.problems().begin(), found.problems().end());
     return;
   }
-  std::ranges::copy(findings->notes, std::back_inserter(analysis_.notes));
-  open_ = united(findings->all, analysis_.suspects);
+  Findings findings = *std::move(found);
+  std::ranges::copy(findings.notes, std::back_inserter(analysis_.notes));
+  for (Finding& finding : findings.all) {
+    finding.g_per_L *= in_tank_per_in_sample_;
+    finding.u_g_per_L *= in_tank_per_in_sample_;
+  }
+  open_ = united(findings.all, analysis_.suspects);
 
   // The counter-ion is what electroneutrality leaves; a finding of it can only be compared.
   const std::string& counter = counter_ion();
@@ -244,7 +273,9 @@ void Evaluation::add_result(const bath::Quantity& quantity) {
                                {level->u_mol_per_L * molar_mass},
                                level->from,
                                std::move(how),
-                               direct != used_.end() ? direct->interferences : ""});
+                               direct != used_.end() ? direct->interferences : "",
+                               direct != used_.end() ? direct->titrant_lot : "",
+                               direct != used_.end() ? direct->titrated_by : ""});
 }
 
 void Evaluation::list_levels() {
@@ -334,7 +365,21 @@ std::string_view name(Origin origin) {
 
 Result<Analysis> evaluate(const Readings& readings, const bath::Tank& tank, const bath::Chemistry& chemistry,
                           const std::optional<Book>& book) {
-  return Evaluation(readings, tank, chemistry, book).run();
+  if (!readings.sample_temperature) return Evaluation(readings, tank, chemistry, book, 1).run();
+
+  // The ratio needs the composition and the composition the ratio; water's is within some per cent of it, and
+  // each turn makes the error a hundred times smaller.
+  const units::Celsius in_tank = readings.temperature.value_or(tank.temperature);
+  double ratio = matter::water_density(in_tank) / matter::water_density(*readings.sample_temperature);
+  for (int turns_left = 8;; --turns_left) {
+    auto analysis = Evaluation(readings, tank, chemistry, book, ratio).run();
+    if (!analysis || turns_left == 0) return analysis;
+    bath::TankState sample = analysis->state;
+    sample.temperature = *readings.sample_temperature;
+    const double next = chemistry.volume_L(sample) / chemistry.volume_L(analysis->state);
+    if (std::abs(next - ratio) < 1e-6) return analysis;
+    ratio = next;
+  }
 }
 
 }  // namespace bathwright::analysis

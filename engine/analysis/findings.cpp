@@ -9,6 +9,7 @@
 #include <bathwright/units/show.hpp>
 #include <cmath>
 
+#include "titrants.hpp"
 #include "uncertainty_terms.hpp"
 
 namespace bathwright::analysis {
@@ -76,19 +77,27 @@ Result<const Method*> method_that_finds(const bath::Quantity& quantity, const ba
   return known;
 }
 
-Result<Finding> finding_of(const Titration& titration, const bath::BathType& type) {
+Result<Finding> finding_of(const Titration& titration, const Titrants& titrants, const bath::BathType& type) {
   const auto quantity = quantity_to_find(type, titration.quantity, titration.where);
   if (!quantity) return quantity.problems();
   const auto chosen = method_that_finds(**quantity, type, titration.method,
                                         titration.written.where("method", titration.where));
   if (!chosen) return chosen.problems();
   const Method& method = **chosen;
-  const auto result = work_out(titration, method,
+  const auto as_done = titrants.filled_in(titration, method);
+  if (!as_done) return as_done.problems();
+  const auto result = work_out(*as_done, method,
                                *quantity_per_analyte(method, **quantity) * (*quantity)->formula.molar_mass());
   if (!result) return result.problems();
-  return Finding{*quantity,           result->value.v, result->standard_uncertainty.v,
-                 Origin::titration,   result->how,     titration.where,
-                 method.interferences};
+  return Finding{*quantity,
+                 result->value.v,
+                 result->standard_uncertainty.v,
+                 Origin::titration,
+                 result->how,
+                 titration.where,
+                 method.interferences,
+                 titration.titrant_lot,
+                 titration.titrated_by};
 }
 
 Result<Finding> finding_of(const Found& found, const bath::BathType& type,
@@ -132,14 +141,21 @@ Result<Finding> finding_of(const Found& found, const bath::BathType& type,
   return finding;
 }
 
+/// Those of `texts` that say something, each once.
+std::string joined(const std::vector<Finding>& findings, std::string Finding::*text) {
+  std::vector<std::string_view> different;
+  for (const Finding& f : findings) {
+    if (!(f.*text).empty() && std::ranges::count(different, f.*text) == 0) different.push_back(f.*text);
+  }
+  return fmt::format("{}", fmt::join(different, "; "));
+}
+
 Finding mean_of(const std::vector<Finding>& same) {
   const auto n = static_cast<double>(same.size());
   Finding mean = same.front();
   double sum = 0, sum_of_u2 = 0, sum_of_squares = 0;
-  std::vector<std::string_view> hows, interferences;
+  std::vector<std::string_view> hows;
   for (const Finding& f : same) {
-    if (!f.interferences.empty() && std::ranges::count(interferences, f.interferences) == 0)
-      interferences.push_back(f.interferences);
     sum += f.g_per_L;
     sum_of_u2 += f.u_g_per_L * f.u_g_per_L;
     mean.from = std::max(mean.from, f.from);
@@ -149,7 +165,8 @@ Finding mean_of(const std::vector<Finding>& same) {
   for (const Finding& f : same) sum_of_squares += std::pow(f.g_per_L - mean.g_per_L, 2);
   mean.u_g_per_L = std::sqrt(std::max(sum_of_u2 / n, sum_of_squares / (n - 1)));
   mean.how = fmt::format("mean of {}: {}", same.size(), fmt::join(hows, "; "));
-  mean.interferences = fmt::format("{}", fmt::join(interferences, "; "));
+  for (auto text : {&Finding::interferences, &Finding::titrant_lot, &Finding::titrated_by})
+    mean.*text = joined(same, text);
   return mean;
 }
 
@@ -168,7 +185,10 @@ Result<Findings> findings_of(const Readings& readings, const bath::BathType& typ
     else
       problems.insert(problems.end(), finding.problems().begin(), finding.problems().end());
   };
-  for (const Titration& titration : readings.titrations) keep(finding_of(titration, type));
+  const auto titrants = Titrants::of(readings.standardised);
+  if (!titrants) return titrants.problems();
+  findings.notes = titrants->notes();
+  for (const Titration& titration : readings.titrations) keep(finding_of(titration, *titrants, type));
   for (const Found& found : readings.found) keep(finding_of(found, type, readings.density, findings.notes));
   if (!problems.empty()) return problems;
   return findings;

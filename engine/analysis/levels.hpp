@@ -15,6 +15,7 @@ struct Finding {
   double g_per_L = 0, u_g_per_L = 0;
   Origin from = Origin::titration;
   std::string how, where, interferences{};
+  std::string titrant_lot{}, titrated_by{};
 };
 
 class Levels {

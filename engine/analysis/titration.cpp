@@ -188,7 +188,8 @@ std::string how_read(const Titration& t, const Method& method) {
                          t.written.text("excess_strength", show(t.excess_strength)), method.titrant);
     text += written("burette", t.burette);
     if (method.kind == Kind::difference) text += " and " + written("second_burette", t.second_burette);
-    text += fmt::format(" of {} {}", t.written.text("titrant", show(t.titrant)),
+    text += fmt::format(" of {}{} {}", t.written.text("titrant", show(t.titrant)),
+                        t.equivalents > 0 ? " = " + show(t.titrant) : "",
                         method.kind == Kind::back ? method.back_titrant : method.titrant);
   }
   if (t.factor != 1) text += " (factor " + units::significant(t.factor) + ")";
@@ -202,9 +203,11 @@ std::string how_read(const Titration& t, const Method& method) {
 
 double square(double x) { return x * x; }
 
+double u_strength(double stated_rel) { return stated_rel > 0 ? stated_rel : uncertainty_term("titrant"); }
+
 /// First-order terms. Volumes of back titration are counted in mL of reagent.
 UncertaintyBudget budget_of(const Titration& t, const Method& m) {
-  const double u_titrant = uncertainty_term("titrant");
+  const double u_titrant = u_strength(t.u_titrant_rel);
   const auto pipette_rel = [](units::Litres volume) {
     return volume.v > 0 ? *u_pipette_mL(volume.v * mL) / (volume.v * mL) : 0;
   };
@@ -244,7 +247,8 @@ UncertaintyBudget budget_of(const Titration& t, const Method& m) {
     net_mL = excess_mL - reagent_per_mL * used_mL;
     u2 = square(*u_pipette_mL(excess_mL)) + square(reagent_per_mL * one_mL);
     blank_weight = reagent_per_mL;
-    titrant_rel = u_titrant * std::hypot(excess_mL, reagent_per_mL * used_mL) / net_mL;
+    titrant_rel =
+        std::hypot(u_strength(t.u_excess_rel) * excess_mL, u_titrant * reagent_per_mL * used_mL) / net_mL;
   }
   if (t.blank.v > 0) u2 += square(blank_weight * one_mL);
   budget.reading_mL = std::sqrt(u2);
@@ -283,8 +287,8 @@ double monte_carlo_uncertainty(const Titration& t, const Method& m, units::Grams
     reading(x.burette_L, t.burette.v);
     reading(x.second_L, t.second_burette.v);
     reading(x.blank_L, t.burette.v);
-    relative(x.titrant_mol_per_L, uncertainty_term("titrant"));
-    relative(x.excess_mol_per_L, uncertainty_term("titrant"));
+    relative(x.titrant_mol_per_L, u_strength(t.u_titrant_rel));
+    relative(x.excess_mol_per_L, u_strength(t.u_excess_rel));
     glass(x.excess_L, u_pipette_mL);
     glass(x.flask_L, u_flask_mL);
     glass(x.sample_L, u_pipette_mL);

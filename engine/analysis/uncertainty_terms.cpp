@@ -35,6 +35,16 @@ const ToleranceBySize& flasks() {
   return glass;
 }
 
+const std::map<std::string, double, std::less<>>& terms() {
+  static const auto read = [] {
+    const auto table = data::built_in_table("analysis/uncertainty_terms.csv", {"value"});
+    std::map<std::string, double, std::less<>> all;
+    for (std::size_t i = 0; i < table.size(); ++i) all.emplace(table[i]["id"], table[i].number("value"));
+    return all;
+  }();
+  return read;
+}
+
 std::optional<double> u_of_smallest(const ToleranceBySize& glass, double volume_mL) {
   constexpr double round_off = 1e-9;  // 10 mL typed and carried in litres may come back as 10.000000000000002
   const auto holds = glass.lower_bound(volume_mL * (1 - round_off));
@@ -52,15 +62,20 @@ double largest_pipette_mL() { return pipettes().rbegin()->first; }
 double largest_flask_mL() { return flasks().rbegin()->first; }
 
 double uncertainty_term(std::string_view id) {
-  static const auto terms = [] {
-    const auto table = data::built_in_table("analysis/uncertainty_terms.csv", {"value"});
-    std::map<std::string, double, std::less<>> all;
-    for (std::size_t i = 0; i < table.size(); ++i) all.emplace(table[i]["id"], table[i].number("value"));
+  const auto found = terms().find(id);
+  assert(found != terms().end());
+  return found->second;
+}
+
+const std::vector<std::string>& titrant_states() {
+  static const std::vector<std::string> states = [] {
+    constexpr std::string_view prefix = "titrant-";
+    std::vector<std::string> all;
+    for (const auto& [id, value] : terms())
+      if (id.starts_with(prefix)) all.push_back(id.substr(prefix.size()));
     return all;
   }();
-  const auto found = terms.find(id);
-  assert(found != terms.end());
-  return found->second;
+  return states;
 }
 
 }  // namespace bathwright::analysis

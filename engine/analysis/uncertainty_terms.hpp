@@ -3,7 +3,9 @@
 #pragma once
 
 #include <optional>
+#include <string>
 #include <string_view>
+#include <vector>
 
 namespace bathwright::analysis {
 
@@ -18,5 +20,9 @@ namespace bathwright::analysis {
 
 /// A row of uncertainty_terms.csv, in its unit. Asserts that there is one.
 [[nodiscard]] double uncertainty_term(std::string_view id);
+
+/// What may be said of a titrant that is not simply one with a certificate: the rows "titrant-..." without
+/// that word.
+[[nodiscard]] const std::vector<std::string>& titrant_states();
 
 }  // namespace bathwright::analysis

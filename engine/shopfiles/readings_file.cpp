@@ -1,5 +1,10 @@
+#include <fmt/format.h>
+
+#include <bathwright/analysis/method.hpp>
+#include <bathwright/analysis/standardisation.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/units/read.hpp>
+#include <cctype>
 
 #include "ranges.hpp"
 #include "schema.hpp"
@@ -40,6 +45,84 @@ analysis::AsWritten as_written(const Table& table, std::initializer_list<const c
   return written;
 }
 
+/// A strength as typed, or the name of a standardised titrant, which begins with no digit. A normality must
+/// say its equivalents; the answer is what it says, or 0.
+double read_strength(Table& entry, const Key& key, const std::string& titrant, units::MolesPerLitre& strength,
+                     std::string& name) {
+  if (entry.any(key) == nullptr) return 0;
+  const std::string text = entry.written(key.name);
+  if (!text.empty() && std::isalpha(static_cast<unsigned char>(text.front())) != 0) {
+    name = text;
+    return 0;
+  }
+  const bool normality = text.find('N') != std::string::npos;
+  if (!normality) {
+    strength = entry.positive(key, units::read_molarity).value_or(units::MolesPerLitre{});
+    return 0;
+  }
+  const auto usual = analysis::equivalents_of(titrant);
+  const auto typed = units::read_concentration(text, entry.where(key.name));
+  if (typed) {
+    strength = *units::moles_per_litre_if_direct(*typed);
+    if (!(strength.v > 0))
+      entry.report(key.name, "is zero", "more than zero, as " + std::string(key.example));
+    return typed->equivalents;
+  }
+  Problem problem = typed.problems().front();
+  if (usual && problem.what.find("equivalents") != std::string::npos)
+    problem.try_this =
+        fmt::format("Write ({:g} eq/mol) behind it if it is {}, or give mol/L.", *usual, titrant);
+  entry.report(key.name, Problems{problem});
+  return 0;
+}
+
+/// Each text of a list as a quantity more than zero.
+template <class T>
+std::vector<T> read_all(Table& entry, const Key& key, Result<T> (*read)(std::string_view, std::string_view)) {
+  std::vector<T> all;
+  for (const std::string& text : entry.texts(key)) {
+    auto value = read(text, entry.where(key.name));
+    if (!value)
+      entry.report(key.name, value.problems());
+    else if (!(value->v > 0))
+      entry.report(key.name, "holds a zero", "more than zero, as " + std::string(key.example));
+    else
+      all.push_back(*std::move(value));
+  }
+  return all;
+}
+
+analysis::Standardised read_standardised(Table& entry) {
+  analysis::Standardised s;
+  const auto volume = [&](const char* key, const char* example) {
+    return entry.positive({key, optional, example}, units::read_volume).value_or(units::Litres{});
+  };
+  s.where = entry.where("name");
+  s.name = entry.text({"name", required, R"("EDTA-2611")"});
+  if (!s.name.empty() && std::isdigit(static_cast<unsigned char>(s.name.front())) != 0)
+    entry.report("name", "begins with a digit, as a strength does", "a name, as \"EDTA-2611\"");
+  s.titrant = entry.text({"titrant", required, R"("EDTA")"});
+  s.against = entry.text({"against", required, R"("zinc")"});
+  s.weighed = read_all(entry, {"weighed", optional, R"(["0.1634 g", "0.1650 g"])"}, units::read_mass);
+  s.taken = read_all(entry, {"taken", optional, R"(["25.00 mL"])"}, units::read_volume);
+  s.burette = read_all(entry, {"burette", required, R"(["24.98 mL", "25.22 mL"])"}, units::read_volume);
+  s.blank = entry.quantity({"blank", optional, R"("0.05 mL")"}, units::read_volume).value_or(units::Litres{});
+  if (entry.any({"assay", optional, R"("99.9 %")"}) != nullptr) {
+    const auto assay = units::read_fraction(entry.written("assay"), entry.where("assay"));
+    if (assay)
+      s.assay = *assay;
+    else
+      entry.report("assay", assay.problems());
+  }
+  s.diluted_to = volume("diluted_to", R"("250 mL")");
+  s.aliquot = volume("aliquot", R"("25.00 mL")");
+  const Key known{"known_strength", optional, R"("THIO-12")"};
+  read_strength(entry, known, "", s.known_strength, s.known_name);
+  s.written = as_written(entry, {"name", "titrant", "against", "weighed", "taken", "burette", "blank",
+                                 "assay", "diluted_to", "aliquot", "known_strength"});
+  return s;
+}
+
 Titration read_titration(Table& entry) {
   Titration t;
   const auto volume = [&](const char* key, const char* example) {
@@ -55,20 +138,25 @@ Titration read_titration(Table& entry) {
   t.weighed =
       entry.positive({"weighed", optional, R"("0.4512 g")"}, units::read_mass).value_or(units::Kilograms{});
   const Need titrated = entry.has("weighed") ? optional : required;  // what is weighed has no burette
-  t.titrant = entry.positive({"titrant", titrated, R"("0.1012 mol/L")"}, units::read_molarity)
-                  .value_or(units::MolesPerLitre{});
+  const analysis::Method* method = analysis::method(t.method);
+  const std::string usual = method ? method->titrant : "", behind = method ? method->back_titrant : "";
+  t.equivalents = read_strength(entry, {"titrant", titrated, R"("0.1012 mol/L")"},
+                                behind.empty() ? usual : behind, t.titrant, t.titrant_name);
   t.factor = entry.number({"factor", optional, "1.003"}, possible_factor).value_or(1);
   t.burette =
       entry.quantity({"burette", titrated, R"("23.80 mL")"}, units::read_volume).value_or(units::Litres{});
   t.second_burette = volume("second_burette", R"("18.20 mL")");
   t.excess = volume("excess", R"("50.00 mL")");
-  t.excess_strength = entry.positive({"excess_strength", optional, R"("0.0500 mol/L")"}, units::read_molarity)
-                          .value_or(units::MolesPerLitre{});
+  read_strength(entry, {"excess_strength", optional, R"("0.0500 mol/L")"}, usual, t.excess_strength,
+                t.excess_name);
+  t.titrant_state = entry.text({"titrant_state", optional, R"("week-old")"});
   const auto blank = entry.quantity({"blank", optional, R"("0.05 mL")"}, units::read_volume);
   t.blank = blank.value_or(units::Litres{});
-  t.written =
-      as_written(entry, {"quantity", "method", "sample", "diluted_to", "aliquot", "titrant", "factor",
-                         "burette", "second_burette", "blank", "excess", "excess_strength", "weighed"});
+  t.written = as_written(
+      entry, {"quantity", "method", "sample", "diluted_to", "aliquot", "titrant", "factor", "burette",
+              "second_burette", "blank", "excess", "excess_strength", "weighed", "titrant_state"});
+  t.titrant_lot = entry.text({"titrant_lot", optional, R"("E-2611")"});
+  t.titrated_by = entry.text({"titrated_by", optional, R"("M. Okafor")"});
   if (t.blank > t.burette) {
     entry.report("blank", "is more than the burette reading", "the titrant used without a sample",
                  "Are the two readings interchanged?");
@@ -107,11 +195,21 @@ Result<Readings> read_readings_text(std::string_view name, std::string_view text
   Readings readings;
   readings.file = name;
   readings.sampled = read_sampled(root);
+  readings.sample_number = root.text({"sample_number", optional, R"("2611-07")"});
+  readings.sampled_by = root.text({"sampled_by", optional, R"("J. Marsh")"});
   read_level(root, readings);
   readings.temperature = root.quantity({"temperature", optional, R"("54 degC")"}, units::read_temperature);
+  readings.sample_temperature =
+      root.quantity({"sample_temperature", optional, R"("22 degC")"}, units::read_temperature);
+  if (readings.sample_temperature && (readings.sample_temperature->v < liquid_bath_C.low ||
+                                      readings.sample_temperature->v > liquid_bath_C.high))
+    root.report("sample_temperature", "no bath is liquid at this temperature", "-10 to 110 degC",
+                "Check the unit.");
   readings.pH = root.number({"pH", optional, "4.1"}, possible_pH);
   readings.density = root.positive({"density", optional, R"("28 degBe")"}, units::read_density);
   readings.written = as_written(root, {"level_below_mark", "density"});
+  for (Table& entry : root.tables({"standardised", optional, "[[standardised]]"}))
+    readings.standardised.push_back(read_standardised(entry));
   for (Table& entry : root.tables({"titration", optional, "[[titration]]"})) {
     readings.titrations.push_back(read_titration(entry));
   }

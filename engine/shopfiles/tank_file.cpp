@@ -13,13 +13,51 @@ namespace {
 using bath::Aim;
 using bath::Tank;
 
+/// The share of an inner volume that anodes, coils and parts take, so that solution cannot.
+double read_displacement(Table& vessel) {
+  const Key key{"displacement", required, R"("5 %")"};
+  if (vessel.any(key) == nullptr) return 0;
+  const auto share = units::read_fraction(vessel.written(key.name), vessel.where(key.name));
+  if (!share) {
+    vessel.report(key.name, share.problems());
+    return 0;
+  }
+  if (*share > possible_displacement.high)
+    vessel.report(key.name, "leaves hardly any room for solution", "0 to 50 %",
+                  "Give the share that is taken.");
+  return *share;
+}
+
+/// Solution at the mark: as it is, or from the walls less what stands between them. One of the two, so that
+/// nothing is taken off twice.
+units::Litres read_working_volume(Table& vessel) {
+  const auto litres = [&](const Key& key) {
+    return vessel.positive(key, units::read_volume).value_or(units::Litres{});
+  };
+  if (!vessel.has("inner_volume")) {
+    if (vessel.has("displacement")) {
+      read_displacement(vessel);
+      vessel.report("displacement", "stands without an inner_volume",
+                    "inner_volume, from the walls of the vessel",
+                    "Leave it out: a working_volume is what the solution fills already.");
+    }
+    return litres({"working_volume", required, R"("2400 L")"});
+  }
+  if (vessel.has("working_volume")) {
+    litres({"working_volume", optional, R"("2400 L")"});
+    vessel.report("working_volume", "stands beside an inner_volume", "the one or the other",
+                  "Remove one of them.");
+  }
+  const units::Litres inner = litres({"inner_volume", required, R"("2526 L")"});
+  return {inner.v * (1 - read_displacement(vessel))};
+}
+
 void read_vessel(Table& root, Tank& tank) {
   auto vessel = root.table({"vessel", required, R"({ working_volume = "2400 L", freeboard = "150 L" })"});
   if (!vessel) return;
-  const auto volume = vessel->positive({"working_volume", required, R"("2400 L")"}, units::read_volume);
+  tank.working_volume = read_working_volume(*vessel);
   const auto freeboard = vessel->quantity({"freeboard", required, R"("150 L")"}, units::read_volume);
   tank.surface = vessel->positive({"surface", optional, R"("200 dm2")"}, units::read_area);
-  tank.working_volume = volume.value_or(units::Litres{});
   tank.freeboard = freeboard.value_or(units::Litres{});
 }
 

@@ -210,6 +210,22 @@ TEST_CASE("what may have counted besides is told with the result", "[unit]") {
   CHECK(level(a, "SO4^2-").interferences.empty());
 }
 
+TEST_CASE("who sampled, who titrated and the titrant's lot go with the results", "[unit]") {
+  auto readings = morning();
+  readings.sample_number = "2611-07";
+  readings.sampled_by = "J. Marsh";
+  readings.titrations[0].titrant_lot = "E-2611";
+  readings.titrations[0].titrated_by = "M. Okafor";
+  readings.titrations.push_back(readings.titrations[0]);
+  readings.titrations.back().titrant_lot = "E-2612";
+  const auto a = evaluated(readings);
+  CHECK(a.sample_number == "2611-07");
+  CHECK(a.sampled_by == "J. Marsh");
+  CHECK(level(a, "Ni^2+").titrant_lot == "E-2611; E-2612");
+  CHECK(level(a, "Ni^2+").titrated_by == "M. Okafor");
+  CHECK(level(a, "Cl^-").titrant_lot.empty());
+}
+
 TEST_CASE("a level an instrument states has the repeatability of its method", "[unit]") {
   auto readings = morning();
   readings.titrations.erase(readings.titrations.begin());
@@ -257,4 +273,56 @@ TEST_CASE("free and total cyanide are not mixed up", "[failure]") {
     const auto right = analysis::evaluate(readings, tank(), *prepared);
     CHECK((right || right.problems().front().what.find("finds the") == std::string::npos));
   }
+}
+
+TEST_CASE("a sample pipetted cold is brought to the tank's temperature", "[reference]") {
+  // Ratio of the volume of water at t to that at 20 degC, practice of the trade (from the density of water):
+  // a bath with next to nothing in it must give them back, for a level found cold is so much lower hot.
+  struct Row {
+    double tank_C, ratio;
+  };
+  for (const Row& row : {Row{40, 1.0060}, Row{50, 1.0103}, Row{60, 1.0153}, Row{70, 1.0209}}) {
+    INFO(row.tank_C);
+    auto readings = morning();
+    readings.titrations.clear();
+    readings.found = {found("Ni^2+", 0.02, 1e-3), found("Cl^-", 0.01, 1e-3), found("H3BO3", 0.01, 1e-3)};
+    readings.temperature = units::Celsius{row.tank_C};
+    const double hot = level(evaluated(readings), "H3BO3").value.v;
+    readings.sample_temperature = units::Celsius{20};
+    const auto a = evaluated(readings);
+    CHECK(hot / level(a, "H3BO3").value.v == Approx(row.ratio).margin(1e-4).epsilon(0));
+    CHECK(says(a.notes, "pipetted at 20.0 degC"));
+    CHECK_FALSE(says(a.notes, "expansion of water"));
+  }
+}
+
+TEST_CASE("salts change how far a bath expands: its own density counts, not that of water", "[unit]") {
+  // Water from 22 to 54 degC: 0.99777/0.98621 (Kell 1975), 1.0117. The amounts in the tank are those of the
+  // sample: levels times the volumes of one and the same state at both temperatures.
+  auto readings = morning();
+  const double cold = level(evaluated(readings), "Ni^2+").value.v;
+  readings.sample_temperature = units::Celsius{22};
+  const auto a = evaluated(readings);
+  const double ratio = cold / level(a, "Ni^2+").value.v;
+  bath::TankState in_flask = a.state;
+  in_flask.temperature = {22};
+  CHECK(ratio == Approx(a.volume.v / chemistry().volume_L(in_flask)).epsilon(1e-6));
+  CHECK(ratio == Approx(1.0117).margin(0.004).epsilon(0));
+  CHECK(std::abs(ratio - 1.0117) > 1e-4);
+  CHECK(level(a, "Ni^2+").standard_uncertainty.v / level(a, "Ni^2+").value.v ==
+        Approx(0.00654561).epsilon(0.001));
+  // What the book has is of the tank already.
+  const analysis::Book book{{{"H3BO3", 40}}, 4.0, "log entry 12"};
+  readings.titrations = {nickel(), chloride()};
+  CHECK(level(evaluated(readings, book), "H3BO3").value.v == Approx(40).epsilon(1e-12));
+}
+
+TEST_CASE("the volume has the uncertainty of the way it was found", "[unit]") {
+  // Common practice: 1 % of the tank's own measure, 5 mm of level, 3 % where nobody looked.
+  auto readings = morning();
+  CHECK(evaluated(readings).u_volume_L == Approx(std::hypot(24, 10)));
+  readings.level_below_mark.reset();
+  CHECK(evaluated(readings).u_volume_L == Approx(std::hypot(24, 72)));
+  readings.volume = units::Litres{2340};
+  CHECK(evaluated(readings).u_volume_L == Approx(23.4));
 }

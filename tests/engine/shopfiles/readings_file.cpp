@@ -80,9 +80,52 @@ TEST_CASE("dilution, back titration, two end points and a weighed precipitate ar
   CHECK(readings.found[0].method_where == "r.toml:26: found.method");
 }
 
+TEST_CASE("who sampled and titrated what, and from which bottle, is read as it stands", "[unit][shopfiles]") {
+  const Readings readings = readings_of(
+      "sample_number = \"2611-07\"\nsampled_by = \"J. Marsh\"\n"
+      "[[titration]]\nquantity = \"Ni^2+\"\nmethod = \"edta-nickel\"\nsample = \"2 mL\"\ntitrant = \"0.1 mol/L\"\n"
+      "burette = \"23.8 mL\"\ntitrant_lot = \"E-2611\"\ntitrated_by = \"M. Okafor\"\n");
+  CHECK(readings.sample_number == "2611-07");
+  CHECK(readings.sampled_by == "J. Marsh");
+  CHECK(readings.titrations.at(0).titrant_lot == "E-2611");
+  CHECK(readings.titrations.at(0).titrated_by == "M. Okafor");
+}
+
 TEST_CASE("the sampling time may stand in quotes, with or without seconds", "[unit][shopfiles]") {
   for (const char* written : {"2026-03-02T05:40:00", "\"2026-03-02T05:40:00\"", "\"2026-03-02 05:40\""}) {
     INFO(written);
     CHECK(readings_of("sampled = " + std::string(written)).sampled == "2026-03-02T05:40:00");
   }
+}
+
+TEST_CASE("a titrant standardised in the shop is read, and used by its name", "[unit][shopfiles]") {
+  const Readings readings = readings_of(
+      "[[standardised]]\nname = \"EDTA-2611\"\ntitrant = \"EDTA\"\nagainst = \"zinc\"\n"
+      "weighed = [\"0.1635 g\", \"164.2 mg\"]\nburette = [\"25.00 mL\", \"25,15 mL\"]\nblank = \"0.02 mL\"\n"
+      "assay = \"99.9 %\"\ndiluted_to = \"250 mL\"\naliquot = \"25 mL\"\n"
+      "[[standardised]]\nname = \"I2-7\"\ntitrant = \"iodine\"\nagainst = \"sodium thiosulfate\"\n"
+      "taken = [\"25 mL\"]\nburette = [\"24.8 mL\"]\nknown_strength = \"THIO-12\"\n"
+      "[[titration]]\nquantity = \"Ni^2+\"\nmethod = \"edta-nickel\"\nsample = \"2 mL\"\ntitrant = \"EDTA-2611\"\n"
+      "burette = \"23.8 mL\"\ntitrant_state = \"week-old\"\n"
+      "[[titration]]\nquantity = \"Fe^2+\"\nmethod = \"permanganate-iron-ii\"\nsample = \"10 mL\"\n"
+      "titrant = \"0.1 N (5 eq/mol)\"\nburette = \"5 mL\"\n");
+  REQUIRE(readings.standardised.size() == 2);
+  const auto& edta = readings.standardised[0];
+  CHECK(edta.name == "EDTA-2611");
+  CHECK(edta.titrant == "EDTA");
+  CHECK(edta.against == "zinc");
+  REQUIRE(edta.weighed.size() == 2);
+  CHECK(edta.weighed[1].v == Approx(0.1642e-3).epsilon(1e-14));
+  CHECK(edta.burette.at(1).v == Approx(25.15e-3).epsilon(1e-14));
+  CHECK(edta.blank.v == Approx(0.02e-3).epsilon(1e-14));
+  CHECK(edta.assay == Approx(0.999).epsilon(1e-14));
+  CHECK(edta.aliquot.v == Approx(25e-3).epsilon(1e-14));
+  CHECK(edta.where == "r.toml:2: standardised.name");
+  CHECK(readings.standardised[1].known_name == "THIO-12");
+  CHECK(readings.standardised[1].taken.at(0).v == Approx(25e-3).epsilon(1e-14));
+  REQUIRE(readings.titrations.size() == 2);
+  CHECK(readings.titrations[0].titrant_name == "EDTA-2611");
+  CHECK(readings.titrations[0].titrant_state == "week-old");
+  CHECK(readings.titrations[1].titrant.v == Approx(0.02).epsilon(1e-14));
+  CHECK(readings.titrations[1].equivalents == 5);
 }

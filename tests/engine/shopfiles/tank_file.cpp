@@ -61,6 +61,20 @@ TEST_CASE("the demonstration tank is read as it stands", "[unit][shopfiles]") {
   CHECK(tank.on_shelf("sulfuric-acid")->priced_per == ShelfItem::Per::litre);
 }
 
+TEST_CASE("a vessel measured by its walls holds what stands in it does not take", "[unit][shopfiles]") {
+  const auto tank = shopfiles::read_tank_text(
+      "t.toml",
+      "bath_type = \"b\"\nname = \"t\"\nvessel = { inner_volume = \"2500 L\", displacement = \"4 %\", "
+      "freeboard = \"5 L\", surface = \"200 dm2\" }\n"
+      "operating = { temperature = \"55 degC\", idle_temperature = \"18 degC\" }\n"
+      "[target]\npH = { aim = 4, low = 3, high = 5 }\n",
+      stock());
+  INFO((tank ? "" : text(tank.problems())));
+  REQUIRE(tank);
+  CHECK(tank->working_volume.v == Approx(2400).epsilon(1e-14));
+  CHECK(tank->surface->v == 200);
+}
+
 TEST_CASE("deionised water is on the shelf without being in the catalogue", "[unit][shopfiles]") {
   const ShelfItem water = only_item(R"(water = { price = 0, unit = "L" })");
   CHECK(water.stock.formula == "H2O");

@@ -20,6 +20,7 @@ struct LevelFound {
   Origin from = Origin::titration;
   std::string how;              ///< "23.80 mL of 0.1012 mol/L EDTA on 2.000 mL", for the sheet
   std::string interferences{};  ///< what the method counts besides, or misses; empty where none is known
+  std::string titrant_lot{}, titrated_by{};  ///< as given with the titrations; of several, between "; "
 };
 
 /// Something in the readings that does not fit.
@@ -40,6 +41,8 @@ struct Analysis {
   std::vector<Suspect> suspects;
   std::vector<std::string>
       notes;  ///< assumptions made: temperature from the tank file, pH from the book, ...
+  std::string sample_number{}, sampled_by{};  ///< as given with the readings
+  double u_volume_L = 0;                      ///< one standard uncertainty of `volume`, from how it was found
 };
 
 /// Levels known from the last logged analysis of the tank, g/L by quantity id; what nobody titrated today is
@@ -54,10 +57,11 @@ struct Book {
 ///   Several findings of one quantity are averaged; the uncertainty of the mean is that of one of them (root
 ///   mean square), or their scatter where that is larger: titrant and sample are shared, so it does not
 ///   shrink. A level that follows from others already (NiCl2.6H2O beside Cl^-) is compared with them and not
-///   used. Salt views and the counter-ion carry the uncertainty of what they are made of, to first order,
-///   with its correlations: NiSO4.6H2O = Ni^2+ - 1/2 Cl^-. Every assumption is a note, everything that does
-///   not fit (by more than 3 standard uncertainties, or a rule of sanity.hpp) a suspect; no figure is changed
-///   silently.
+///   used. With a sample_temperature every level found is brought to the tank's temperature by the density of
+///   the solution at both; the book's are of the tank already. Salt views and the counter-ion carry the
+///   uncertainty of what they are made of, to first order, with its correlations: NiSO4.6H2O = Ni^2+ - 1/2
+///   Cl^-. Every assumption is a note, everything that does not fit (by more than 3 standard uncertainties,
+///   or a rule of sanity.hpp) a suspect; no figure is changed silently.
 /// Fails, with every problem found, on: an unknown quantity or method, a method that does not measure the
 /// quantity, a component of the bath with no level, readings that are not positive, no pH, a level below the
 /// mark of a tank without a surface, levels that cannot be (see Chemistry::state_from).

@@ -30,6 +30,24 @@ struct AsWritten : std::map<std::string, Written, std::less<>> {
   }
 };
 
+/// A titrant standardised in this shop, for titrations to use by its name. What is not used is 0.
+struct Standardised {
+  std::string name;                       ///< "EDTA-2611"
+  std::string titrant;                    ///< as methods name it: "EDTA"
+  std::string against;                    ///< as data/analysis/standardisations.csv names it: "zinc"
+  std::vector<units::Kilograms> weighed;  ///< of the standard, one for each run
+  std::vector<units::Litres> taken;       ///< of a known solution, one for each run
+  std::vector<units::Litres> burette;     ///< one for each run
+  units::Litres blank;
+  double assay = 1;                     ///< kg/kg, of what is weighed
+  units::Litres diluted_to, aliquot;    ///< flask the standard was made up in, and what was titrated of it
+  units::MolesPerLitre known_strength;  ///< of the known solution, actual
+  std::string known_name;               ///< of one of these titrants, instead of known_strength
+  std::string where;
+  AsWritten written{};
+  double known_u_rel = 0;  ///< of known_strength; that of a purchased titrant where a file states none
+};
+
 /// One titration as it was read, or one precipitate as it was weighed. What the method does not use is 0.
 struct Titration {
   std::string quantity;          ///< "Ni^2+"
@@ -45,8 +63,14 @@ struct Titration {
       aliquot{};                   ///< flask the sample was made up in, and how much of that was titrated
   units::Litres second_burette{};  ///< the other end point of a difference
   units::Litres excess{};          ///< back titration: reagent added
-  units::MolesPerLitre excess_strength{};  ///< of the reagent, actual
-  units::Kilograms weighed{};              ///< precipitate
+  units::MolesPerLitre excess_strength{};    ///< of the reagent, actual
+  units::Kilograms weighed{};                ///< precipitate
+  std::string titrant_lot{}, titrated_by{};  ///< for the record; empty if not given
+  double equivalents = 0;  ///< per mole, where the strength was typed as a normality; 0: it was not
+  std::string titrant_name{}, excess_name{};  ///< a Standardised, instead of the strength
+  std::string titrant_state{};  ///< "week-old", "old-caustic", ...: titrant_states(); empty: as purchased
+  /// One standard uncertainty of the strengths; 0: of a purchased titrant with its certificate.
+  double u_titrant_rel = 0, u_excess_rel = 0;
 };
 
 /// A concentration found by other means.
@@ -69,7 +93,10 @@ struct Readings {
   std::optional<units::KilogramsPerLitre> density;  ///< hydrometer
   std::vector<Titration> titrations;
   std::vector<Found> found;
-  AsWritten written{};  ///< level_below_mark, density
+  AsWritten written{};                                 ///< level_below_mark, density
+  std::string sample_number{}, sampled_by{};           ///< for the record; empty if not given
+  std::optional<units::Celsius> sample_temperature{};  ///< when pipetted; nothing: as hot as the tank
+  std::vector<Standardised> standardised{};
 };
 
 }  // namespace bathwright::analysis
