@@ -7,8 +7,10 @@
 #include <cassert>
 #include <cmath>
 
+#include "explanations.hpp"
 #include "findings.hpp"
 #include "levels.hpp"
+#include "reconcile.hpp"
 #include "sanity.hpp"
 #include "uncertainty_terms.hpp"
 
@@ -35,11 +37,14 @@ class Evaluation {
     find_volume();
     find_temperature();
     find_pH();
+    if (problems_.empty()) list_expected();
     take_findings();
     if (!problems_.empty()) return problems_;
     list_levels();
     std::ranges::copy(misfits(analysis_, tank_), std::back_inserter(analysis_.suspects));
     close_with_state();
+    if (!problems_.empty()) return problems_;
+    reconcile();
     if (!problems_.empty()) return problems_;
     compare_what_was_not_used();
     compare_density();
@@ -61,6 +66,13 @@ class Evaluation {
   void take_all_that_settle();
   void list_levels();
   void close_with_state();
+  [[nodiscard]] std::vector<Finding> read_today() const;
+  [[nodiscard]] Gathered gathered(double proton_mol) const;
+  void list_expected();
+  Weighed weigh_and_test(const Gathered& all);
+  void reconcile();
+  void take_reconciled(const Gathered& all, const Weighed& weighed);
+  void suspect_what_misfits();
   void compare_what_was_not_used();
   void compare_density();
 
@@ -224,12 +236,22 @@ void Evaluation::take_findings() {
 }
 
 void Evaluation::take_from_book(const bath::Component& component) {
-  const auto own = std::ranges::find_if(type_.quantities, [&](const bath::Quantity& q) {
-    return !q.salt_view && q.counts.size() == 1 && q.counts.contains(component.species);
-  });
+  const auto own_of = [&](std::size_t parts) {
+    return std::ranges::find_if(type_.quantities, [&](const bath::Quantity& q) {
+      return !q.salt_view && q.counts.size() <= parts && q.counts.contains(component.species);
+    });
+  };
+  auto own = own_of(1);
+  if (own == type_.quantities.end()) own = own_of(2);  // free cyanide, for the cyanide
   const bool has_quantity = own != type_.quantities.end();
   const std::string& called = has_quantity ? own->id : component.species;
-  if (has_quantity && book_ && book_->g_per_L.contains(called)) {
+  if (const auto expected = std::ranges::find(analysis_.expected, called, &LevelFound::quantity);
+      has_quantity && expected != analysis_.expected.end()) {
+    open_.push_back({&*own, std::max(expected->value.v, 0.0), expected->standard_uncertainty.v, Origin::book,
+                     book_->from, book_->from});
+    note(fmt::format("{} was not analysed: {} +/- {} by the book", called, show(expected->value),
+                     show(expected->standard_uncertainty)));
+  } else if (has_quantity && book_ && book_->g_per_L.contains(called)) {
     const double level = book_->g_per_L.at(called);
     if (!(level >= 0) || !std::isfinite(level)) {
       refuse(called, fmt::format("{} has {} g/L", book_->from, units::significant(level)), "0 or more",
@@ -289,6 +311,7 @@ void Evaluation::list_levels() {
 void Evaluation::close_with_state() {
   auto state = chemistry_.state_from(levels_.in_use(), analysis_.pH, analysis_.volume, analysis_.temperature);
   if (!state) {
+    if (book_ && book_->carried) weigh_and_test(gathered(book_->carried->component_mol[0]));
     problems_ = state.problems();
     for (const Suspect& s : analysis_.suspects) refuse(s.what, s.reason, "", s.try_this);
     return;
@@ -317,6 +340,102 @@ void Evaluation::compare_pH() {
                     "acid and alkali; it was not used",
                     units::significant(*readings_.pH, 3), units::significant(solved->pH(), 3)));
   }
+}
+
+std::vector<Finding> Evaluation::read_today() const {
+  std::vector<Finding> read;
+  const bool by_carrying = book_ && book_->carried;
+  for (const auto* findings : {&used_, &unused_})
+    std::ranges::copy_if(*findings, std::back_inserter(read),
+                         [&](const Finding& f) { return !by_carrying || f.from != Origin::book; });
+  return read;
+}
+
+Gathered Evaluation::gathered(double proton_mol) const {
+  std::vector<double> start_mol(chemistry_.components().size(), 0);
+  for (std::size_t i = 0; i < start_mol.size(); ++i)
+    if (const auto level = levels_.of({{chemistry_.components()[i], 1}}))
+      start_mol[i] = level->mol_per_L * analysis_.volume.v;
+  return gather(read_today(), {analysis_.volume.v, analysis_.u_volume_L}, start_mol, proton_mol,
+                book_ ? book_->carried : std::nullopt, chemistry_);
+}
+
+// Before anything is read.
+void Evaluation::list_expected() {
+  if (!book_ || !book_->carried) return;
+  const Gathered before = gathered(book_->carried->component_mol[0]);
+  Weighed as_it_was;
+  as_it_was.state = before.weighing.before.mean;
+  as_it_was.covariance = before.weighing.before.spread * before.weighing.before.spread.transpose();
+  for (const bath::Quantity& quantity : type_.quantities) {
+    const ReconciledLevel level = level_of(quantity, before, as_it_was, chemistry_);
+    analysis_.expected.push_back(
+        {quantity.id, {level.g_per_L}, {level.u_g_per_L}, Origin::book, book_->from});
+  }
+}
+
+Weighed Evaluation::weigh_and_test(const Gathered& all) {
+  Weighed weighed = weigh(all.weighing);
+  analysis_.misfit = tested(all, weighed);
+  if (book_ && book_->carried) {
+    explain(analysis_.misfit, {all, weighed, readings_, tank_, chemistry_, book_->carried});
+    suspect_what_misfits();
+  }
+  return weighed;
+}
+
+void Evaluation::reconcile() {
+  const Gathered all = gathered(analysis_.state.component_mol[0]);
+  const Weighed weighed = weigh_and_test(all);
+  analysis_.component_covariance = covariance_of(all, weighed);
+  analysis_.reconciled = analysis_.results;
+  analysis_.volume_reconciled = analysis_.volume;
+  if (all.degrees_of_freedom() > 0) take_reconciled(all, weighed);
+}
+
+void Evaluation::take_reconciled(const Gathered& all, const Weighed& weighed) {
+  analysis_.volume_reconciled = {weighed.state(weighed.state.size() - 1)};
+  for (LevelFound& level : analysis_.reconciled) {
+    const ReconciledLevel now = level_of(*type_.quantity(level.quantity), all, weighed, chemistry_);
+    level.value = {now.g_per_L};
+    level.standard_uncertainty = {now.u_g_per_L};
+  }
+  std::map<std::string, double> g_per_L = levels_.in_use();
+  for (auto& [id, level] : g_per_L)
+    level = std::max(level_of(*type_.quantity(id), all, weighed, chemistry_).g_per_L, 0.0);
+  auto state =
+      chemistry_.state_from(g_per_L, analysis_.pH, analysis_.volume_reconciled, analysis_.temperature);
+  if (state)
+    analysis_.state = *std::move(state);
+  else
+    problems_ = state.problems();
+}
+
+void Evaluation::suspect_what_misfits() {
+  const Misfit& misfit = analysis_.misfit;
+  if (!misfit.alarm) return;
+  const std::string apart = fmt::format(
+      "readings and book are apart: chi-square {:.1f} of {} readings, which chance alone makes of one "
+      "analysis in {}",
+      misfit.chi_square, misfit.degrees_of_freedom,
+      misfit.probability > 1e-6 ? fmt::format("{:.0f}", 1 / misfit.probability) : "a million or more");
+  const auto with = [&](const Explanation& e) {
+    return fmt::format("{} (chi-square {:.1f} less)", e.words, e.chi_square_drop);
+  };
+  if (misfit.one_is_clear) {
+    const Explanation& first = misfit.explanations.front();
+    analysis_.suspects.push_back({first.culprit, fmt::format("{}; {}", with(first), apart), first.try_this});
+    return;
+  }
+  std::string reason = apart + "; no single mistake explains it";
+  if (misfit.explanations.size() == 1) reason = apart + "; it may be that " + with(misfit.explanations[0]);
+  if (misfit.explanations.size() > 1)
+    reason = fmt::format("{}; it may be that {}, or that {}", apart, with(misfit.explanations[0]),
+                         with(misfit.explanations[1]));
+  analysis_.suspects.push_back({"levels", std::move(reason),
+                                misfit.explanations.empty()
+                                    ? "Repeat the analysis on a fresh sample first; add nothing."
+                                    : misfit.explanations.front().try_this});
 }
 
 void Evaluation::compare_what_was_not_used() {

@@ -18,7 +18,8 @@ std::vector<Suspect> misfits(const Analysis& analysis, const bath::Tank& tank) {
       suspects.push_back({level.quantity,
                           fmt::format("works out to {}, below zero ({})", show(level.value), level.how),
                           "One of the levels it is made of is wrong: titrate them again."});
-    } else if (aim && std::abs(level.value.v - aim->aim) > far_from_aim * aim->aim) {
+    } else if (aim && analysis.expected.empty() &&
+               std::abs(level.value.v - aim->aim) > far_from_aim * aim->aim) {
       suspects.push_back(
           {level.quantity,
            fmt::format("{} is more than half away from the aim of {}", show(level.value),

@@ -6,8 +6,8 @@
 
 namespace bathwright::analysis {
 
-/// A level more than half its aim away from it; a salt view below zero; a pH outside 0 to 14; a volume above
-/// the mark and freeboard.
+/// A level more than half its aim away from it, where no book says what to expect; a salt view below zero; a
+/// pH outside 0 to 14; a volume above the mark and freeboard.
 [[nodiscard]] std::vector<Suspect> misfits(const Analysis& analysis, const bath::Tank& tank);
 
 /// A hydrometer reading more than 1 % from the density that follows from the levels: about what a shop

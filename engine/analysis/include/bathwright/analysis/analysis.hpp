@@ -2,7 +2,9 @@
 // Read next: readings.hpp for what goes in, titration.hpp for the arithmetic of one titration.
 #pragma once
 
+#include <bathwright/analysis/carried.hpp>
 #include <bathwright/analysis/method.hpp>
+#include <bathwright/analysis/misfit.hpp>
 #include <bathwright/analysis/readings.hpp>
 #include <bathwright/bath/chemistry.hpp>
 
@@ -34,7 +36,17 @@ struct Analysis {
   units::Celsius temperature;
   double pH = 0;  ///< as read; as computed where the acid or alkali is analysed and no pH was read
   std::vector<LevelFound> results;  ///< components, salt views, counter-ion; nothing that counts H^+
-  bath::TankState state;
+  /// Lab and book weighed against each other, in the order of `results`; where there is nothing to weigh, the
+  /// results themselves.
+  std::vector<LevelFound> reconciled;
+  units::Litres volume_reconciled;
+  std::vector<LevelFound>
+      expected;           ///< what the book had before the readings, as `reconciled`; without it empty
+  Misfit misfit;          ///< of readings and book
+  bath::TankState state;  ///< of the reconciled levels
+  /// Covariance of state.component_mol, mol^2: row after row, in the order of Chemistry::components. H^+ that
+  /// follows from the pH counts as exact; the counter-ion keeps the charges balanced.
+  std::vector<double> component_covariance;
   units::KilogramsPerLitre density_predicted;
   std::optional<units::KilogramsPerLitre> density_measured;
   std::string density_read;  ///< the hydrometer reading as it was written: "28 degBe"
@@ -51,6 +63,9 @@ struct Book {
   std::map<std::string, double> g_per_L;
   std::optional<double> pH;
   std::string from;  ///< "log entry 12, 2026-03-01 22:10"
+  /// The tank carried through what was logged since, whose levels `g_per_L` are; without it they are those of
+  /// the last analysis, and nothing is reconciled with them.
+  std::optional<Carried> carried{};
 };
 
 /// Works the readings out.
