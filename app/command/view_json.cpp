@@ -69,6 +69,14 @@ Json analysis_document(const bath::Tank& tank, const bath::BathType& type,
   doc["density"] = {
       {"predicted", analysis.density_predicted.v},
       {"measured", analysis.density_measured ? Json(analysis.density_measured->v) : Json(nullptr)}};
+  doc["end_points"] = Json::array();
+  for (const auto& bias : analysis.end_points)
+    doc["end_points"].push_back({{"quantity", bias.quantity},
+                                 {"method", bias.method},
+                                 {"indicator", bias.indicator},
+                                 {"bias_mL", bias.mL},
+                                 {"bias_percent", 100 * bias.share},
+                                 {"range_mL", {bias.from_mL, bias.to_mL}}});
   doc["levels"] = level_list(sheets::judge(tank, type, analysis));
   return doc;
 }

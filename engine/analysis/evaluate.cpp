@@ -48,6 +48,7 @@ class Evaluation {
     if (!problems_.empty()) return problems_;
     compare_what_was_not_used();
     compare_density();
+    look_at_end_points();
     return std::move(analysis_);
   }
 
@@ -75,6 +76,7 @@ class Evaluation {
   void suspect_what_misfits();
   void compare_what_was_not_used();
   void compare_density();
+  void look_at_end_points();
 
   [[nodiscard]] const std::string& counter_ion() const;
   void add_result(const bath::Quantity& quantity);
@@ -91,6 +93,7 @@ class Evaluation {
   Problems problems_;
   Levels levels_;
   std::vector<Finding> open_, used_, unused_;
+  std::vector<Titration> titrations_;  ///< with the strengths of their titrants
 };
 
 // Each way of finding the volume has its uncertainty: the tank's own measure, the level, or that nobody
@@ -195,6 +198,7 @@ void Evaluation::take_findings() {
     return;
   }
   Findings findings = *std::move(found);
+  titrations_ = std::move(findings.titrations);
   std::ranges::copy(findings.notes, std::back_inserter(analysis_.notes));
   for (Finding& finding : findings.all) {
     finding.g_per_L *= in_tank_per_in_sample_;
@@ -464,6 +468,29 @@ void Evaluation::compare_density() {
   analysis_.density_measured = readings_.density;
   if (readings_.density) analysis_.density_read = readings_.written.text("density", show(*readings_.density));
   std::ranges::copy(density_misfit(analysis_), std::back_inserter(analysis_.suspects));
+}
+
+// Told where it matters and not applied: the flask as computed is not the flask as the eye saw it.
+void Evaluation::look_at_end_points() {
+  for (const Titration& titration : titrations_) {
+    const auto bias = end_point_bias(titration, *method(titration.method),
+                                     *type_.quantity(titration.quantity), chemistry_, analysis_.state);
+    if (!bias) continue;
+    analysis_.end_points.push_back(*bias);
+    const auto level = std::ranges::find(analysis_.results, bias->quantity, &LevelFound::quantity);
+    if (level == analysis_.results.end() ||
+        !(std::abs(bias->share * level->value.v) > level->standard_uncertainty.v / 2))
+      continue;
+    const auto mL = [](double value) { return fmt::format("{:+.2f}", value); };
+    const std::string range = bias->from_mL == bias->to_mL ? ""
+                                                           : fmt::format(" ({} to {} over its range)",
+                                                                         mL(bias->from_mL), mL(bias->to_mL));
+    note(fmt::format(
+        "{}: computed for this flask, {} changes at {} mL{} from the equivalence: the level may read "
+        "{} % {}; it was not corrected",
+        bias->quantity, bias->indicator, mL(bias->mL), range,
+        units::significant(100 * std::abs(bias->share), 2), bias->mL < 0 ? "low" : "high"));
+  }
 }
 
 }  // namespace

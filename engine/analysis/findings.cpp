@@ -77,18 +77,31 @@ Result<const Method*> method_that_finds(const bath::Quantity& quantity, const ba
   return known;
 }
 
-Result<Finding> finding_of(const Titration& titration, const Titrants& titrants, const bath::BathType& type) {
+/// A result that its own uncertainty could make from nothing: within 3 of them of 0 (common practice).
+void note_below_detection(const Titrated& result, const std::string& quantity,
+                          std::vector<std::string>& notes) {
+  const units::GramsPerLitre least{3 * result.standard_uncertainty.v};
+  if (result.value < least)
+    notes.push_back(
+        fmt::format("{}: {} is below what the method tells from nothing, {} (3 standard uncertainties)",
+                    quantity, show(result.value), show(least)));
+}
+
+Result<Finding> finding_of(Titration& titration, const Titrants& titrants, const bath::BathType& type,
+                           std::vector<std::string>& notes) {
   const auto quantity = quantity_to_find(type, titration.quantity, titration.where);
   if (!quantity) return quantity.problems();
   const auto chosen = method_that_finds(**quantity, type, titration.method,
                                         titration.written.where("method", titration.where));
   if (!chosen) return chosen.problems();
   const Method& method = **chosen;
-  const auto as_done = titrants.filled_in(titration, method);
+  auto as_done = titrants.filled_in(titration, method);
   if (!as_done) return as_done.problems();
-  const auto result = work_out(*as_done, method,
+  titration = *std::move(as_done);
+  const auto result = work_out(titration, method,
                                *quantity_per_analyte(method, **quantity) * (*quantity)->formula.molar_mass());
   if (!result) return result.problems();
+  note_below_detection(*result, titration.quantity, notes);
   return Finding{*quantity,
                  result->value.v,
                  result->standard_uncertainty.v,
@@ -188,7 +201,9 @@ Result<Findings> findings_of(const Readings& readings, const bath::BathType& typ
   const auto titrants = Titrants::of(readings.standardised);
   if (!titrants) return titrants.problems();
   findings.notes = titrants->notes();
-  for (const Titration& titration : readings.titrations) keep(finding_of(titration, *titrants, type));
+  findings.titrations = readings.titrations;
+  for (Titration& titration : findings.titrations)
+    keep(finding_of(titration, *titrants, type, findings.notes));
   for (const Found& found : readings.found) keep(finding_of(found, type, readings.density, findings.notes));
   if (!problems.empty()) return problems;
   return findings;

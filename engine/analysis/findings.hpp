@@ -9,6 +9,8 @@ namespace bathwright::analysis {
 
 struct Findings {
   std::vector<Finding> all;
+  std::vector<Titration>
+      titrations;  ///< with the strengths of their titrants, by whatever way these were given
   std::vector<std::string> notes;
 };
 

@@ -49,6 +49,7 @@ Method method_of(const data::CsvRow& row) {
   m.end_point = row["end_point"];
   m.reaction = row["reaction"];
   m.interferences = row["interferences"];
+  m.safety = row["safety"];
   m.note = row["note"];
   m.steps = row.list("steps");
   m.source = row["source"];

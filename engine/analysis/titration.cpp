@@ -165,9 +165,19 @@ class Refusals {
              fmt::format("{} of sample and {} of aliquot do not fit a flask of {}", show(t_.sample, "mL"),
                          show(t_.aliquot, "mL"), show(t_.diluted_to, "mL")),
              "a flask larger than both", "Check which figure is which.");
-    if (problems_.empty() && !(mol_per_L(figures_of(t_), method_) > 0))
-      refuse("burette", "the readings leave nothing, or less than nothing, of it", "a result above 0",
-             "Check which figure is which, and the strengths.");
+    const double found = problems_.empty() ? mol_per_L(figures_of(t_), method_) : 1;
+    if (found > 0) return;
+    const bool difference = method_.kind == Kind::difference;
+    refuse("burette",
+           fmt::format("{} leave {} of it",
+                       difference
+                           ? fmt::format("{} and {}", show(t_.burette, "mL"), show(t_.second_burette, "mL"))
+                           : "the readings",
+                       found < 0 ? "less than nothing" : "nothing"),
+           "a result above 0",
+           difference
+               ? "Check which figure is which; if both are right, there is less than the method can tell."
+               : "Check which figure is which, and the strengths.");
   }
 
   const Titration& t_;

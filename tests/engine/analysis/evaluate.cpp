@@ -326,3 +326,12 @@ TEST_CASE("the volume has the uncertainty of the way it was found", "[unit]") {
   readings.volume = units::Litres{2340};
   CHECK(evaluated(readings).u_volume_L == Approx(23.4));
 }
+
+TEST_CASE("a level that could as well be none is said to be", "[unit]") {
+  // 0.1 mL of titrant, read to 0.0507 mL (10 mL burette, ordinary end point): below three of that.
+  auto readings = morning();
+  readings.titrations[1].burette = {0.1e-3};
+  CHECK(
+      says(evaluated(readings).notes, "Cl^-: 0.1769 g/L is below what the method tells from nothing, 0.26"));
+  CHECK_FALSE(says(evaluated(morning()).notes, "below what the method tells"));
+}

@@ -225,8 +225,10 @@ TEST_CASE("figures a method does not use, or misses, are refused", "[failure]") 
       {"edta-nickel", "do not fit a flask", "which figure is which",
        [](Titration& t) { t.diluted_to = {1e-3}, t.aliquot = {1e-3}; }},
       {"difference-aluminium", "second burette reading is 0 mL", "Enter the second", [](Titration&) {}},
-      {"difference-aluminium", "leave nothing", "which figure is which",
-       [](Titration& t) { t.second_burette = {24e-3}; }},
+      {"difference-aluminium", "23.80 mL and 24.00 mL leave less than nothing of it",
+       "less than the method can tell", [](Titration& t) { t.second_burette = {24e-3}; }},
+      {"difference-aluminium", "23.80 mL and 23.80 mL leave nothing of it", "which figure is which",
+       [](Titration& t) { t.second_burette = t.burette; }},
       {"electrode-fluoride", "has no burette", "under [[found]]", [](Titration&) {}},
   };
   for (const Row& row : rows) {

@@ -3,6 +3,7 @@
 #pragma once
 
 #include <bathwright/analysis/carried.hpp>
+#include <bathwright/analysis/end_point.hpp>
 #include <bathwright/analysis/method.hpp>
 #include <bathwright/analysis/misfit.hpp>
 #include <bathwright/analysis/readings.hpp>
@@ -55,6 +56,9 @@ struct Analysis {
       notes;  ///< assumptions made: temperature from the tank file, pH from the book, ...
   std::string sample_number{}, sampled_by{};  ///< as given with the readings
   double u_volume_L = 0;                      ///< one standard uncertainty of `volume`, from how it was found
+  /// Of every titration whose flask can be computed: where its indicator changes. Told in a note where it
+  /// makes more than half a standard uncertainty; no level is changed for it.
+  std::vector<EndPointBias> end_points{};
 };
 
 /// Levels known from the last logged analysis of the tank, g/L by quantity id; what nobody titrated today is

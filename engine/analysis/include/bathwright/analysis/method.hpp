@@ -39,6 +39,7 @@ struct Method {
   units::Litres usual_sample, usual_flask, usual_aliquot;  ///< 0 where nothing is diluted
   units::MolesPerLitre usual_titrant;
   std::string indicator, end_point, reaction, interferences, note, source;
+  std::string safety;  ///< what it brings to the bench beyond strong acid and alkali; empty: nothing more
   std::vector<std::string> steps;
   double u_end_point_mL = 0.05;  ///< one standard uncertainty of the end point
   /// Repeatability as handbooks state it, relative. The reading, end-point and sampling terms of a titration
