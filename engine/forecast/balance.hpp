@@ -1,4 +1,5 @@
-// What a policy does to the amounts in a tank, hour by hour: rates compiled once, then exact steps.
+// What a policy does to the amounts in a tank over a stretch of hours. Read next: flow.hpp, which steps with
+// it.
 #pragma once
 
 #include <bathwright/forecast/compiled.hpp>
@@ -6,27 +7,24 @@
 
 namespace bathwright::forecast {
 
-/// Rates over a stretch of hours in which nothing changes but the amounts.
+/// g per unit of each effect of each use that asks for the state; empty for the others.
+using EffectsNow = std::vector<std::vector<double>>;
+
+/// Rates over a stretch of hours in which nothing changes but the amounts; per hour where nothing is said.
 struct Rates {
-  double loss_per_h = 0;                             ///< k: share of the tank that leaves in an hour
-  Amounts in_per_h;                                  ///< p
-  double drag_out_L = 0, bleed_L = 0, top_up_L = 0;  ///< per hour
-  double cost = 0, deposited_mol = 0;                ///< per hour
+  double drag_out_L = 0, bleed_L = 0, drag_in_L = 0;
+  bool works = false;
+  Amounts in;         ///< of all that does not go with the water that fills up; evaporation taken off
+  Amounts water;      ///< per litre of water: what its ions are
+  Amounts with_fill;  ///< per litre of water that fills the tank up: the feeds that go with it
+  double cost = 0, cost_per_fill_L = 0;
+  std::vector<double> feed_kg, feed_kg_per_fill_L;  ///< per feed
+  std::vector<double> deposited_mol;                ///< per use
+  std::vector<Amounts> by_use;                      ///< of `in`
+  double carbon_dioxide_g = 0;
 };
 
 Rates rates(const bath::Tank& tank, const Compiled& compiled, const Policy& policy, const Draw& draw,
-            bool works);
-
-/// What a stretch did, for the balance of the whole run.
-struct Moved {
-  std::vector<double> in_mol, out_mol;
-};
-
-/// The exact step over `hours`, then water to the mark. Fails when the salts leave no room for water.
-Outcome advance(bath::TankState& state, const Rates& rates, double hours, double volume_L,
-                const bath::Chemistry& chemistry, Moved& moved);
-
-/// Water until the tank stands at `volume_L`.
-Outcome fill(bath::TankState& state, double volume_L, const bath::Chemistry& chemistry);
+            bool works, std::size_t water, const EffectsNow& effects);
 
 }  // namespace bathwright::forecast

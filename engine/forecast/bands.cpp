@@ -5,6 +5,8 @@
 #include <random>
 #include <thread>
 
+#include "block.hpp"
+#include "inputs.hpp"
 #include "limits.hpp"
 
 namespace bathwright::forecast {
@@ -21,7 +23,7 @@ class Normal {
   /// A factor of mean 1 and relative standard deviation u, lognormal.
   double factor(double u) {
     const double s2 = std::log1p(u * u), deviate = (*this)();
-    return u > 0 ? std::exp(std::sqrt(s2) * deviate - s2 / 2) : 1;
+    return std::exp(std::sqrt(s2) * deviate - s2 / 2);
   }
 
  private:
@@ -29,25 +31,10 @@ class Normal {
   std::mt19937_64 random_;
 };
 
-double or_zero(double u) { return std::isnan(u) ? 0 : u; }
-
-Draw drawn(const Prepared& p, std::uint64_t seed, double u_level) {
+Draw drawn(const Prepared& p, const std::vector<Input>& inputs, std::uint64_t seed) {
   Normal normal(seed);
-  const Policy& policy = p.policy;
-  Draw draw;
-  draw.area = normal.factor(policy.area_m2_per_shift.u_rel);
-  draw.drag_out = normal.factor(policy.drag_out_L_per_m2.u_rel);
-  draw.drag_in = normal.factor(policy.drag_in_L_per_m2.u_rel);
-  draw.evaporation = normal.factor(policy.evaporation_L_per_h.u_rel);
-  draw.water = normal.factor(policy.u_water_rel);
-  for (const Work& work : policy.work) draw.work.push_back(normal.factor(work.per_shift.u_rel));
-  for (const bath::Use& use : p.chemistry.type().uses) {
-    draw.effects.push_back(normal.factor(or_zero(use.effects_u_rel)));
-    draw.efficiency.push_back(
-        normal.factor(or_zero(use.u_cathode_efficiency) / std::max(use.cathode_efficiency, 1e-9)));
-  }
-  for (std::size_t i = 0; i < p.chemistry.components().size(); ++i)
-    draw.level.push_back(normal.factor(u_level));
+  Draw draw = as_it_stands(p);
+  for (const Input& input : inputs) input.in(draw) = normal.factor(input.u_rel);
   return draw;
 }
 
@@ -62,12 +49,14 @@ double percentile(std::vector<double>& values, double share) {
 }
 
 template <class Value>
-Band band(const std::vector<Run>& runs, const Value& value) {
+Band band(const std::vector<Run>& runs, std::size_t days, const Value& value) {
   Band band;
-  for (std::size_t d = 0; d < runs.front().days.size(); ++d) {
+  for (std::size_t d = 0; d < days; ++d) {
     std::vector<double> all;
-    for (const Run& run : runs)
+    for (const Run& run : runs) {
+      if (d >= run.days.size()) continue;
       if (const double v = value(run.days[d]); !std::isnan(v)) all.push_back(v);
+    }
     const bool none = all.empty();
     band.p05.push_back(none ? bath::not_given : percentile(all, 0.05));
     band.p50.push_back(none ? bath::not_given : percentile(all, 0.50));
@@ -85,23 +74,39 @@ Result<Bands> Forecast::sample(const bath::TankState& start, const Sampling& sam
   if (sampling.samples < 1)
     return Problem{Fault::bad_input, "samples", std::to_string(sampling.samples), "1 or more", ""};
   const auto count = static_cast<std::size_t>(sampling.samples);
+  const auto stands = run(start);
+  if (!stands) return stands.problems();
+  // Blocks of a fixed size, so that the figures do not hang on the number of threads; large enough that what
+  // a block does once a day does not count, small enough that stopping is quick.
+  constexpr std::size_t block_size = 32;
+  const std::size_t blocks = (count + block_size - 1) / block_size;
+  const std::vector<Input> inputs = uncertain_inputs(*prepared_, sampling.u_level_rel);
+  const int horizon = prepared_->policy.horizon_days;
   std::vector<Run> runs(count);
-  std::vector<Problems> failed(count);
-  std::atomic<std::size_t> next{0}, done{0};
+  std::atomic<std::size_t> next{0};
+  std::atomic<std::uint64_t> done{0};
   std::atomic<bool> stopped{false};
   std::mutex telling;
+  const auto tell = [&](std::uint64_t more) {
+    done += more;
+    if (!progress) return;
+    const std::scoped_lock lock(telling);
+    const double all = static_cast<double>(count) * (horizon + 1);
+    if (!stopped && !progress(static_cast<double>(done) / all)) stopped = true;
+  };
   const auto work = [&] {
-    for (std::size_t i; !stopped && (i = next++) < count;) {
-      const Draw draw = drawn(*prepared_, sampling.seed * 0x9E3779B97F4A7C15u + i, sampling.u_level_rel);
-      auto one = run(start, &draw);
-      if (one)
-        runs[i] = *std::move(one);
-      else
-        failed[i] = one.problems();
-      const double share = static_cast<double>(++done) / static_cast<double>(count);
-      if (!progress) continue;
-      const std::scoped_lock lock(telling);
-      if (!progress(share)) stopped = true;
+    for (std::size_t b; !stopped && (b = next++) < blocks;) {
+      const std::size_t first = b * block_size, paths = std::min(block_size, count - first);
+      std::vector<Draw> draws;
+      for (std::size_t i = first; i < first + paths; ++i)
+        draws.push_back(drawn(*prepared_, inputs, sampling.seed * 0x9E3779B97F4A7C15u + i));
+      Block block(*prepared_, start, draws);
+      block.run(
+          horizon, [&](std::size_t path, Day day) { runs[first + path].days.push_back(std::move(day)); },
+          [&](int) {
+            tell(paths);
+            return !stopped;
+          });
     }
   };
   {
@@ -110,21 +115,23 @@ Result<Bands> Forecast::sample(const bath::TankState& start, const Sampling& sam
     work();
   }
   if (stopped) return Problem{Fault::refused, "forecast", "stopped before it was done", "", ""};
-  for (const Problems& problems : failed)
-    if (!problems.empty()) return problems;
-
   Bands bands;
   bands.samples = sampling.samples;
-  for (const Day& day : runs.front().days) bands.day.push_back(day.day);
-  for (std::size_t q = 0; q < runs.front().days.front().quantity_g_per_L.size(); ++q)
-    bands.quantity.push_back(band(runs, [&](const Day& d) { return d.quantity_g_per_L[q]; }));
+  for (const Run& run : runs)  // some may end before the others
+    if (run.days.size() > bands.day.size()) {
+      bands.day.clear();
+      for (const Day& day : run.days) bands.day.push_back(day.day);
+    }
+  for (std::size_t q = 0; q < stands->days.front().quantity_g_per_L.size(); ++q)
+    bands.quantity.push_back(
+        band(runs, bands.day.size(), [&](const Day& d) { return d.quantity_g_per_L[q]; }));
   for (std::size_t s = 0; s < prepared_->watched.size(); ++s) {
-    bands.working.push_back(band(runs, [&](const Day& d) { return d.working_log10[s]; }));
-    bands.idle.push_back(band(runs, [&](const Day& d) { return d.idle_log10[s]; }));
+    bands.working.push_back(band(runs, bands.day.size(), [&](const Day& d) { return d.working_log10[s]; }));
+    bands.idle.push_back(band(runs, bands.day.size(), [&](const Day& d) { return d.idle_log10[s]; }));
   }
-  bands.pH = band(runs, [](const Day& d) { return d.pH; });
-  bands.cost = band(runs, [](const Day& d) { return d.cost; });
-  bands.waste_L = band(runs, [](const Day& d) { return d.waste_L; });
+  bands.pH = band(runs, bands.day.size(), [](const Day& d) { return d.pH; });
+  bands.cost = band(runs, bands.day.size(), [](const Day& d) { return d.cost; });
+  bands.waste_L = band(runs, bands.day.size(), [](const Day& d) { return d.waste_L; });
   for (const Limit& limit : limits_of(*prepared_)) {
     std::vector<double> days;
     std::size_t met = 0;
@@ -133,9 +140,12 @@ Result<Bands> Forecast::sample(const bath::TankState& start, const Sampling& sam
       days.push_back(day.value_or(HUGE_VAL));
       met += day.has_value();
     }
-    bands.limits.push_back(as_met(*prepared_, limit, finite(percentile(days, 0.05)),
-                                  finite(percentile(days, 0.50)), finite(percentile(days, 0.95)),
-                                  static_cast<double>(met) / static_cast<double>(count)));
+    LimitMet sampled = as_met(*prepared_, limit, day_met(limit, stands->days));
+    sampled.day_p05 = finite(percentile(days, 0.05));
+    sampled.day_p50 = finite(percentile(days, 0.50));
+    sampled.day_p95 = finite(percentile(days, 0.95));
+    sampled.share = static_cast<double>(met) / static_cast<double>(count);
+    bands.limits.push_back(std::move(sampled));
   }
   return bands;
 }

@@ -68,18 +68,15 @@ std::optional<double> day_met(const Limit& limit, const std::vector<Day>& days) 
   return std::nullopt;
 }
 
-LimitMet as_met(const Prepared& p, const Limit& limit, std::optional<double> p05, std::optional<double> p50,
-                std::optional<double> p95, double share) {
+LimitMet as_met(const Prepared& p, const Limit& limit, std::optional<double> day) {
   const std::string quantity = limit.is_solid ? "" : p.chemistry.type().quantities[limit.index].id;
-  return {limit.name, limit.cause, quantity, limit.value, limit.above, p50, p05, p50, p95, share};
+  return {limit.name, limit.cause, quantity, limit.value, limit.above, day, day, day, day, day ? 1.0 : 0.0};
 }
 
 std::vector<LimitMet> Forecast::limits(const Run& run) const {
   std::vector<LimitMet> met;
-  for (const Limit& limit : limits_of(*prepared_)) {
-    const auto day = day_met(limit, run.days);
-    met.push_back(as_met(*prepared_, limit, day, day, day, day ? 1.0 : 0.0));
-  }
+  for (const Limit& limit : limits_of(*prepared_))
+    met.push_back(as_met(*prepared_, limit, day_met(limit, run.days)));
   return met;
 }
 

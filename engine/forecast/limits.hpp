@@ -20,8 +20,8 @@ std::vector<Limit> limits_of(const Prepared& prepared);
 
 double value_of(const Limit& limit, const Day& day);
 
-LimitMet as_met(const Prepared& prepared, const Limit& limit, std::optional<double> p05,
-                std::optional<double> p50, std::optional<double> p95, double share);
+/// With the day of a single run.
+LimitMet as_met(const Prepared& prepared, const Limit& limit, std::optional<double> day);
 
 /// By linear interpolation between days; nothing where it is not met.
 std::optional<double> day_met(const Limit& limit, const std::vector<Day>& days);

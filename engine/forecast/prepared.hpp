@@ -4,6 +4,7 @@
 #include <bathwright/forecast/forecast.hpp>
 
 #include "balance.hpp"
+#include "flow.hpp"
 
 namespace bathwright::forecast {
 
@@ -12,8 +13,18 @@ struct Prepared {
   bath::Chemistry chemistry;
   Policy policy;
   Compiled compiled;                 ///< points into the three above
+  Vessels vessels;                   ///< of the policy
   std::vector<std::size_t> watched;  ///< positions in the system's solids
-  double metal_at_aim_mol = 0;       ///< of the deposited metal, in the tank at its aim
+  /// Deposited metals: position in the quantities and mol of it in the tank at its aim.
+  struct Metal {
+    std::size_t quantity;
+    double at_aim_mol;  ///< 0: no aim
+  };
+  std::vector<Metal> metals;
+  std::vector<std::string> species_names, solid_names;  ///< of the system, for `rate`
 };
+
+/// The first metal that has an aim: turnovers are counted in it. nullptr: none.
+[[nodiscard]] const Prepared::Metal* counted_metal(const Prepared& prepared);
 
 }  // namespace bathwright::forecast

@@ -1,0 +1,20 @@
+#include <algorithm>
+#include <bathwright/forecast/policy.hpp>
+
+namespace bathwright::forecast {
+
+bool Calendar::works_on(int day) const {
+  constexpr int days_a_week = 7;
+  for (const Closed& one : closed)
+    if (day >= one.first_day && day < one.first_day + one.days) return false;
+  return (first_weekday + day) % days_a_week < days_per_week;
+}
+
+std::optional<std::chrono::year_month_day> Calendar::date(int day) const {
+  if (!starts) return std::nullopt;
+  return std::chrono::year_month_day(*starts + std::chrono::days(day));
+}
+
+double Calendar::worked_h_per_day() const { return std::min(24.0, shifts_per_day * hours_per_shift); }
+
+}  // namespace bathwright::forecast
