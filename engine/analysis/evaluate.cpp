@@ -33,6 +33,7 @@ class Evaluation {
 
   Result<Analysis> run() {
     analysis_.sample_number = readings_.sample_number;
+    analysis_.sampled = readings_.sampled;
     analysis_.sampled_by = readings_.sampled_by;
     find_volume();
     find_temperature();
@@ -74,6 +75,7 @@ class Evaluation {
   void reconcile();
   void take_reconciled(const Gathered& all, const Weighed& weighed);
   void suspect_what_misfits();
+  void suspect_a_copy();
   void compare_what_was_not_used();
   void compare_density();
   void look_at_end_points();
@@ -367,6 +369,11 @@ Gathered Evaluation::gathered(double proton_mol) const {
 // Before anything is read.
 void Evaluation::list_expected() {
   if (!book_ || !book_->carried) return;
+  const Carried& carried = *book_->carried;
+  note(
+      "the book: " + book_->from +
+      (carried.counted.empty() ? std::string() : fmt::format(", then {}", fmt::join(carried.counted, ", "))));
+  for (const std::string& left_out : carried.not_counted) note("not in the book: " + left_out);
   const Gathered before = gathered(book_->carried->component_mol[0]);
   Weighed as_it_was;
   as_it_was.state = before.weighing.before.mean;
@@ -384,6 +391,7 @@ Weighed Evaluation::weigh_and_test(const Gathered& all) {
   if (book_ && book_->carried) {
     explain(analysis_.misfit, {all, weighed, readings_, tank_, chemistry_, book_->carried});
     suspect_what_misfits();
+    suspect_a_copy();
   }
   return weighed;
 }
@@ -391,7 +399,7 @@ Weighed Evaluation::weigh_and_test(const Gathered& all) {
 void Evaluation::reconcile() {
   const Gathered all = gathered(analysis_.state.component_mol[0]);
   const Weighed weighed = weigh_and_test(all);
-  analysis_.component_covariance = covariance_of(all, weighed);
+  analysis_.covariance = covariance_of(all, weighed);
   analysis_.reconciled = analysis_.results;
   analysis_.volume_reconciled = analysis_.volume;
   if (all.degrees_of_freedom() > 0) take_reconciled(all, weighed);
@@ -415,6 +423,23 @@ void Evaluation::take_reconciled(const Gathered& all, const Weighed& weighed) {
     problems_ = state.problems();
 }
 
+// Three burettes that stop at the same marks as last time, one in ten each: a thousand to one against.
+void Evaluation::suspect_a_copy() {
+  constexpr std::size_t enough = 3;
+  constexpr double rounding = 1e-9;
+  const std::vector<Finding> read = read_today();
+  const auto as_last = [&](const Finding& f) {
+    const auto last = book_->carried->found_last.find(f.quantity->id);
+    return last != book_->carried->found_last.end() && f.g_per_L > 0 &&
+           std::abs(f.g_per_L / last->second - 1) < rounding;
+  };
+  if (read.size() >= enough && std::ranges::all_of(read, as_last))
+    analysis_.suspects.push_back({"readings",
+                                  fmt::format("all {} are those of the last analysis, to the last digit ({})",
+                                              read.size(), book_->from),
+                                  "Titrate a sample of today; enter what the burettes show."});
+}
+
 void Evaluation::suspect_what_misfits() {
   const Misfit& misfit = analysis_.misfit;
   if (!misfit.alarm) return;
@@ -428,13 +453,14 @@ void Evaluation::suspect_what_misfits() {
   };
   if (misfit.one_is_clear) {
     const Explanation& first = misfit.explanations.front();
-    analysis_.suspects.push_back({first.culprit, fmt::format("{}; {}", with(first), apart), first.try_this});
+    analysis_.suspects.push_back({first.culprit, fmt::format("{}; {}.", with(first), apart), first.try_this});
     return;
   }
-  std::string reason = apart + "; no single mistake explains it";
-  if (misfit.explanations.size() == 1) reason = apart + "; it may be that " + with(misfit.explanations[0]);
+  std::string reason = apart + "; no single mistake explains it.";
+  if (misfit.explanations.size() == 1)
+    reason = apart + "; it may be that " + with(misfit.explanations[0]) + ".";
   if (misfit.explanations.size() > 1)
-    reason = fmt::format("{}; it may be that {}, or that {}", apart, with(misfit.explanations[0]),
+    reason = fmt::format("{}; it may be that {}, or that {}.", apart, with(misfit.explanations[0]),
                          with(misfit.explanations[1]));
   analysis_.suspects.push_back({"levels", std::move(reason),
                                 misfit.explanations.empty()
@@ -453,11 +479,11 @@ void Evaluation::compare_what_was_not_used() {
           {finding.quantity->id,
            fmt::format(
                "{} found, but {} follow from the other levels, more than 3 standard uncertainties apart; "
-               "the finding was not used",
+               "the results rest on the others",
                show(found), show(follows)),
            "Titrate both again."});
     } else {
-      note(fmt::format("{} found as {} agrees with the {} that follow from the other levels; it was not used",
+      note(fmt::format("{} found as {} agrees with the {} that follow from the other levels",
                        finding.quantity->id, show(found), show(follows)));
     }
   }

@@ -100,7 +100,7 @@ class Explaining {
                     what, size, times > 1 ? "10 mL for 5 mL" : "5 mL for 10 mL", times > 1 ? "half" : "twice")
               : fmt::format("{} was reported as {} what it is: a dilution forgotten or counted twice", what,
                             size);
-      propose(without, {what, std::move(words), again(what), std::nullopt});
+      propose(without, {Mistake::sample_size, what, std::move(words), again(what), std::nullopt});
     }
   }
 
@@ -120,7 +120,7 @@ class Explaining {
     const Weighed fit = weigh(met_.gathered.weighing, free);
     const double off = fit.shift * free.of_readings(r);
     const double truth = met_.gathered.weighing.readings[at(r)].value - off;
-    keep(fit, {what,
+    keep(fit, {Mistake::reading, what,
                fmt::format("{} reads {} too {}: {} would fit", what,
                            units::show(units::GramsPerLitre{std::abs(off)}), off > 0 ? "high" : "low",
                            units::show(units::GramsPerLitre{std::max(truth, 0.0)})),
@@ -139,9 +139,10 @@ class Explaining {
       Weighing without = met_.gathered.weighing;
       without.readings[at(r)].g_per_mol = met_.gathered.g_per_mol(other, met_.chemistry);
       without.readings[at(r)].g_fixed = met_.gathered.g_fixed(other, met_.chemistry);
-      propose(without,
-              {what, fmt::format("the level given for {} is that of {}", what, other.id),
-               fmt::format("Look up by which method {} was titrated; repeat it.", what), std::nullopt});
+      propose(
+          without,
+          {Mistake::other_share, what, fmt::format("the level given for {} is that of {}", what, other.id),
+           fmt::format("Look up by which method {} was titrated; repeat it.", what), std::nullopt});
     }
   }
 
@@ -165,7 +166,7 @@ class Explaining {
         swap_subjects(without.readings[at(a.reading)], without.readings[at(b.reading)],
                       a.g_per_L_per_mL / b.g_per_L_per_mL);
         const std::string &one = met_.gathered.what[at(a.reading)], &two = met_.gathered.what[at(b.reading)];
-        propose(without, {fmt::format("{} and {}", one, two),
+        propose(without, {Mistake::swapped, fmt::format("{} and {}", one, two),
                           fmt::format("the burette readings of {} and {} are swapped", one, two),
                           fmt::format("Look at the bench sheet; repeat {} first.", one), std::nullopt});
       }
@@ -190,7 +191,7 @@ class Explaining {
     const double truth = met_.gathered.weighing.readings[at(volume)].value - off;
     keep(
         fit,
-        {"volume",
+        {Mistake::volume, "volume",
          fmt::format(
              "all levels together are too {} for this volume: the level was read {} too {} ({} would fit), "
              "or the sample does not stand for the tank (not mixed, water added since), or {} was not logged",
@@ -207,21 +208,24 @@ class Explaining {
       without.before.mean += times * made;
       return without;
     };
-    const auto about = [&](std::string words, const char* try_this) {
-      return Explanation{entry, std::move(words), try_this, addition.entry};
+    const auto about = [&](Mistake mistake, std::string words, const char* try_this) {
+      return Explanation{mistake, entry, std::move(words), try_this, addition.entry};
     };
     constexpr const char* look = "Repeat the analysis first; then look at the slip, the scale and the store.";
     propose(moved(-1),
-            about(fmt::format("{} ({}) is not in the tank: logged but not made, or made in another tank",
+            about(Mistake::not_made,
+                  fmt::format("{} ({}) is not in the tank: logged but not made, or made in another tank",
                               addition.what, entry),
                   look));
-    propose(moved(1), about(fmt::format("{} ({}) is in the tank twice", addition.what, entry), look));
+    propose(moved(1), about(Mistake::made_twice,
+                            fmt::format("{} ({}) is in the tank twice", addition.what, entry), look));
     FreeShift free;
     free.of_state = addition_error_rel * made;
     const Weighed fit = weigh(met_.gathered.weighing, free);
     const double times = 1 + fit.shift * addition_error_rel;
     if (times > 0)
-      keep(fit, about(fmt::format("of {} ({}) it was {} that went in", addition.chemical, entry,
+      keep(fit, about(Mistake::other_amount,
+                      fmt::format("of {} ({}) it was {} that went in", addition.chemical, entry,
                                   mass(times * addition.kg)),
                       look));
     other_hydrates(addition, moved, about);
@@ -240,7 +244,8 @@ class Explaining {
       const auto formula = matter::Formula::parse(other.formula);
       if (!formula) continue;
       propose(moved(logged->molar_mass().v / formula->molar_mass().v - 1),
-              about(fmt::format("the bag of entry {} held {}, not {}", addition.entry, other.formula,
+              about(Mistake::other_hydrate,
+                    fmt::format("the bag of entry {} held {}, not {}", addition.entry, other.formula,
                                 item->stock.formula),
                     "Read the label of the bag and its certificate."));
     }
@@ -255,7 +260,7 @@ class Explaining {
     if (free.of_state.isZero()) return;  // water
     const Weighed fit = weigh(met_.gathered.weighing, free);
     if (!(fit.shift > 0)) return;
-    keep(fit, {fmt::format("{} not logged", item.stock.id),
+    keep(fit, {Mistake::not_logged, fmt::format("{} not logged", item.stock.id),
                fmt::format("an addition that is not in the log: {} {} would fit", mass(fit.shift * usual_kg),
                            item.stock.id),
                "Ask the last shift and look in the store; repeat the analysis before adding.", std::nullopt});
@@ -283,6 +288,32 @@ class Explaining {
 };
 
 }  // namespace
+
+std::string_view name(Mistake mistake) {
+  switch (mistake) {
+    case Mistake::sample_size:
+      return "sample size";
+    case Mistake::reading:
+      return "reading";
+    case Mistake::other_share:
+      return "free for total";
+    case Mistake::swapped:
+      return "swapped burettes";
+    case Mistake::volume:
+      return "volume";
+    case Mistake::not_made:
+      return "addition not made";
+    case Mistake::made_twice:
+      return "addition made twice";
+    case Mistake::other_amount:
+      return "another amount";
+    case Mistake::other_hydrate:
+      return "another hydrate";
+    case Mistake::not_logged:
+      return "addition not logged";
+  }
+  return "";
+}
 
 void explain(Misfit& misfit, const Case& met) {
   if (misfit.alarm) Explaining(misfit, met).run();

@@ -161,8 +161,11 @@ ReconciledLevel level_of(const bath::Quantity& quantity, const Gathered& gathere
 }
 
 std::vector<double> covariance_of(const Gathered& gathered, const Weighed& weighed) {
-  const Index n = weighed.state.size() - 1;
-  const MatrixXd all = gathered.whole * weighed.covariance.topLeftCorner(n, n) * gathered.whole.transpose();
+  const Index amounts = gathered.whole.cols(), components = gathered.whole.rows();
+  MatrixXd whole = MatrixXd::Zero(components + 1, amounts + 1);
+  whole.topLeftCorner(components, amounts) = gathered.whole;
+  whole(components, amounts) = 1;
+  const MatrixXd all = whole * weighed.covariance * whole.transpose();
   std::vector<double> rows;
   for (Index r = 0; r < all.rows(); ++r)
     for (Index c = 0; c < all.cols(); ++c) rows.push_back((all(r, c) + all(c, r)) / 2);

@@ -53,7 +53,7 @@ struct ReconciledLevel {
 [[nodiscard]] ReconciledLevel level_of(const bath::Quantity& quantity, const Gathered& gathered,
                                        const Weighed& weighed, const bath::Chemistry& chemistry);
 
-/// Covariance of all component amounts, mol^2, row after row.
+/// Covariance of all component amounts and last of the volume, mol and L, row after row.
 [[nodiscard]] std::vector<double> covariance_of(const Gathered& gathered, const Weighed& weighed);
 
 /// Chi-square and residuals. There is an alarm where chi-square, or the largest of the residuals for their

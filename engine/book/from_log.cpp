@@ -139,21 +139,36 @@ class Reading {
       if (!corrected) return corrected.problems();
       if (*corrected) continue;
       const Json body = Json::parse(entry.body, nullptr, false);
-      if (is_this_sample(body)) {
-        if (!answer_.same_sample) answer_.same_sample = entry.seq;
-        continue;
-      }
+      if (is_this_sample(body)) continue;
       const auto taken = done_at(entry, calendar_);
       if (!taken || (sampled_ && *taken >= *sampled_)) continue;
-      start_ = start_of(entry, chemistry_);
-      if (!start_) continue;
-      from_ = *taken;
-      answer_.analysis = entry.seq;
-      answer_.book.from = fmt::format("log entry {}, {}", entry.seq, entry.at);
-      if (body.contains("pH") && body["pH"].is_number()) answer_.book.pH = body["pH"].get<double>();
-      break;
+      auto start = start_of(entry, chemistry_);
+      if (!start) continue;
+      const bool fitted = !did_not_fit(body);
+      // One that did not fit is passed over, unless the one before it did not fit either: then it is the book
+      // that was wrong.
+      if (!start_ || fitted) take_start(entry, *taken, *std::move(start), body);
+      if (fitted || passed_over_) break;
+      passed_over_ = entry.seq;
     }
+    if (passed_over_ && answer_.entry != *passed_over_)
+      not_counted_.push_back(
+          fmt::format("entry {} (analysis) did not fit what the log had and is no start", *passed_over_));
     return Done{};
+  }
+
+  static bool did_not_fit(const Json& body) {
+    return body.contains("misfit") && body["misfit"].is_object() && body["misfit"].contains("alarm") &&
+           body["misfit"]["alarm"] == true;
+  }
+
+  void take_start(const Entry& entry, UtcTime taken, Start start, const Json& body) {
+    start_ = std::move(start);
+    from_ = taken;
+    answer_.entry = entry.seq;
+    answer_.book.from = fmt::format("log entry {}, {}", entry.seq, entry.at);
+    answer_.book.pH.reset();
+    if (body.contains("pH") && body["pH"].is_number()) answer_.book.pH = body["pH"].get<double>();
   }
 
   Outcome read_movements() {
@@ -170,7 +185,13 @@ class Reading {
           entry.kind != EntryKind::dump && entry.kind != EntryKind::ampere_hours)
         continue;
       const auto done = done_at(entry, calendar_);
-      if (done && *done > from_ && !(sampled_ && *done > *sampled_)) in_time.emplace_back(*done, &entry);
+      if (!done || *done <= from_) continue;
+      if (!sampled_ || *done <= *sampled_)
+        in_time.emplace_back(*done, &entry);
+      else if (entry.kind == EntryKind::addition || entry.kind == EntryKind::dump)
+        answer_.after_sample.push_back(
+            fmt::format("entry {} ({}) was done after this sample and is not in it.", entry.seq,
+                        logbook::name(entry.kind)));
     }
     std::ranges::stable_sort(in_time, {}, [](const auto& timed) { return timed.first; });
     for (const auto& [time, entry] : in_time) {
@@ -200,6 +221,7 @@ class Reading {
   const std::optional<UtcTime> sampled_;
   UtcTime from_{};
   std::optional<Start> start_;
+  std::optional<std::int64_t> passed_over_;
   std::vector<Movement> movements_;
   std::vector<std::string> not_counted_;
   FromLog answer_;

@@ -335,3 +335,25 @@ TEST_CASE("a level that could as well be none is said to be", "[unit]") {
       says(evaluated(readings).notes, "Cl^-: 0.1769 g/L is below what the method tells from nothing, 0.26"));
   CHECK_FALSE(says(evaluated(morning()).notes, "below what the method tells"));
 }
+
+TEST_CASE("the covariance holds amounts and volume as they were found", "[reference]") {
+  // n = c V, found independently: var n = V^2 u_c^2 + c^2 u_V^2, cov(n, V) = c u_V^2. Two levels of one
+  // sample share how well it stands for the tank, 0.5 %, too.
+  const auto a = evaluated(morning());
+  const auto& names = chemistry().components();
+  const std::size_t rows = names.size() + 1, last = rows - 1;
+  REQUIRE(a.covariance.size() == rows * rows);
+  const auto at = [&](std::size_t r, std::size_t c) { return a.covariance[r * rows + c]; };
+  const auto of = [&](const char* name) {
+    return static_cast<std::size_t>(std::ranges::find(names, name) - names.begin());
+  };
+  const double V = a.volume.v, u_V = a.u_volume_L;
+  CHECK(at(last, last) == Approx(u_V * u_V).epsilon(1e-6));
+  const std::size_t nickel = of("Ni^2+"), boric = of("H3BO3");
+  const double c = a.state.component_mol[nickel] / V;
+  const double u = level(a, "Ni^2+").standard_uncertainty.v / 58.693;
+  CHECK(at(nickel, nickel) == Approx(V * V * u * u + c * c * u_V * u_V).epsilon(1e-4));
+  CHECK(at(nickel, last) == Approx(c * u_V * u_V).epsilon(1e-6));
+  const double c_boric = a.state.component_mol[boric] / V;
+  CHECK(at(nickel, boric) == Approx(c * c_boric * (u_V * u_V + 0.005 * 0.005 * V * V)).epsilon(1e-3));
+}

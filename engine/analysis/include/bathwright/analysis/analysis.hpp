@@ -45,17 +45,18 @@ struct Analysis {
       expected;           ///< what the book had before the readings, as `reconciled`; without it empty
   Misfit misfit;          ///< of readings and book
   bath::TankState state;  ///< of the reconciled levels
-  /// Covariance of state.component_mol, mol^2: row after row, in the order of Chemistry::components. H^+ that
-  /// follows from the pH counts as exact; the counter-ion keeps the charges balanced.
-  std::vector<double> component_covariance;
+  /// Covariance of state.component_mol, in the order of Chemistry::components, and last of the volume, mol and
+  /// L: row after row. H^+ that follows from the pH counts as exact; the counter-ion keeps the charges
+  /// balanced.
+  std::vector<double> covariance;
   units::KilogramsPerLitre density_predicted;
   std::optional<units::KilogramsPerLitre> density_measured;
   std::string density_read;  ///< the hydrometer reading as it was written: "28 degBe"
   std::vector<Suspect> suspects;
   std::vector<std::string>
       notes;  ///< assumptions made: temperature from the tank file, pH from the book, ...
-  std::string sample_number{}, sampled_by{};  ///< as given with the readings
-  double u_volume_L = 0;                      ///< one standard uncertainty of `volume`, from how it was found
+  std::string sampled{}, sample_number{}, sampled_by{};  ///< as given with the readings
+  double u_volume_L = 0;  ///< one standard uncertainty of `volume`, from how it was found
   /// Of every titration whose flask can be computed: where its indicator changes. Told in a note where it
   /// makes more than half a standard uncertainty; no level is changed for it.
   std::vector<EndPointBias> end_points{};

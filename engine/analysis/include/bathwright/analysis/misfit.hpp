@@ -4,6 +4,7 @@
 #include <cstdint>
 #include <optional>
 #include <string>
+#include <string_view>
 #include <vector>
 
 namespace bathwright::analysis {
@@ -18,8 +19,24 @@ struct Residual {
   double studentised = 0;
 };
 
+/// What kind of thing may be wrong.
+enum class Mistake : std::uint8_t {
+  sample_size,  ///< twice or half of what was written down
+  reading,      ///< any other error of a level found
+  other_share,  ///< the free stated for the total, or the other way round
+  swapped,      ///< two burette readings
+  volume,       ///< level, sample or a dump: all levels alike
+  not_made,     ///< an addition logged but not in the tank
+  made_twice,
+  other_amount,   ///< of an addition
+  other_hydrate,  ///< in the bag
+  not_logged      ///< an addition in the tank but not in the log
+};
+[[nodiscard]] std::string_view name(Mistake mistake);
+
 /// One thing that may be wrong, and how much better readings and book fit together without it.
 struct Explanation {
+  Mistake mistake = Mistake::reading;
   std::string culprit;  ///< what is looked at again: "Ni^2+", "volume", "entry 5"
   std::string words;    ///< "the sample of Cl^- was half of what was written down (5 mL for 10 mL)"
   std::string try_this;

@@ -17,8 +17,9 @@ struct Sample {
 
 struct FromLog {
   analysis::Book book;
-  std::int64_t analysis = 0;                ///< the entry it starts from
-  std::optional<std::int64_t> same_sample;  ///< the entry that has these readings already
+  std::int64_t entry = 0;  ///< the entry it starts from
+  std::vector<std::string>
+      after_sample;  ///< additions and dumps that the sample knows nothing of, a sentence each
 };
 
 /// Carries the tank from its last whole analysis before the sample through every entry between the two; one
