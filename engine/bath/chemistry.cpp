@@ -425,17 +425,27 @@ Result<Brings> Chemistry::brings_per_mol(const matter::Formula& formula) const {
 }
 
 Result<Brings> Chemistry::brings(const matter::StockChemical& stock) const {
-  const auto formula = matter::Formula::parse(stock.formula, stock.id);
-  if (!formula) return formula.problems();
-  auto brought = brings_per_mol(*formula);
-  if (!brought) {
-    Problems problems = brought.problems();
-    for (Problem& problem : problems) problem.where = stock.id;
-    return problems;
-  }
-  Brings result = *std::move(brought);
-  for (double& mol : result.component_mol) mol *= stock.mol_per_kg();
-  result.water_kg = stock.water_kg_per_kg() + result.water_kg * stock.mol_per_kg();
+  Brings result{std::vector<double>(components().size(), 0), stock.water_kg_per_kg()};
+  const auto take = [&](const std::string& text, double fraction) -> Outcome {
+    const auto formula = matter::Formula::parse(text, stock.id);
+    if (!formula) return formula.problems();
+    auto brought = brings_per_mol(*formula);
+    if (!brought) {
+      Problems problems = brought.problems();
+      for (Problem& problem : problems) problem.where = stock.id;
+      return problems;
+    }
+    const double mol = fraction * 1000 / formula->molar_mass().v;  // per kg of product
+    for (std::size_t i = 0; i < result.component_mol.size(); ++i)
+      result.component_mol[i] += mol * brought->component_mol[i];
+    const std::size_t partner = prepared_->by_charge;
+    result.component_mol[partner] -= mol * formula->charge() / prepared_->system->species()[partner].charge;
+    result.water_kg += mol * brought->water_kg;
+    return Done{};
+  };
+  if (Outcome taken = take(stock.formula, stock.assay); !taken) return taken.problems();
+  for (const matter::Impurity& impurity : stock.contains)
+    if (Outcome taken = take(impurity.formula, impurity.fraction); !taken) return taken.problems();
   return result;
 }
 

@@ -5,6 +5,10 @@ namespace bathwright::bath {
 
 double ShelfItem::price_per_kg() const { return priced_per == Per::litre ? price / stock.kg_per_L : price; }
 
+bool ShelfItem::expired_on(std::string_view day) const {
+  return !day.empty() && !expires.empty() && day.substr(0, expires.size()) > expires;
+}
+
 const Aim* Tank::aim(std::string_view quantity) const {
   const auto found =
       std::find_if(aims.begin(), aims.end(), [&](const Aim& a) { return a.quantity == quantity; });

@@ -330,6 +330,9 @@ void Statement::read_additions() {
     if (order != std::floor(order)) row.report("order", "is no whole number", "1, 2, 3 ...");
     rule.order = static_cast<std::uint32_t>(order);
     rule.source = source(row);
+    constexpr Range parts{0, 1000};
+    rule.thin_to_parts = row.number({"thin_to_parts", optional, "10"}, parts).value_or(0);
+    rule.half_then_analyse = row.truth({"half_then_analyse", optional, "true"}) ? 1 : 0;
     additions_.push_back(rule);
   }
 }

@@ -1,110 +1,34 @@
 #include "steps.hpp"
 
 #include <algorithm>
+#include <bathwright/bath/at_aims.hpp>
+#include <bathwright/matter/water.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
+
+#include "dissolving.hpp"
+#include "dosing_point.hpp"
+#include "heat.hpp"
+#include "order.hpp"
+#include "step_checks.hpp"
 
 namespace bathwright::dosing {
 namespace {
 
 using bath::AdditionRule;
-using bath::BathType;
 using bath::Chemistry;
-using bath::Headroom;
 using bath::Tank;
 using bath::TankState;
-using bath::TankView;
+using speciation::Equilibrium;
 using units::significant;
 
-const AdditionRule* rule_for(const BathType& type, const std::string& stock_id) {
-  const auto found = std::find_if(type.additions.begin(), type.additions.end(),
-                                  [&](const AdditionRule& rule) { return rule.supply == stock_id; });
-  return found == type.additions.end() ? nullptr : &*found;
-}
-
-/// Water comes first; what the bath type does not order comes last.
-std::uint32_t place(const BathType& type, const Portioned& one) {
-  if (one.item->stock.formula == "H2O") return 0;
-  const AdditionRule* rule = rule_for(type, one.item->stock.id);
-  return rule ? rule->order : std::numeric_limits<std::uint32_t>::max();
-}
-
-/// Whole portions that keep each within its largest single rise and pH step.
-int portions_of(const BathType& type, const Portioned& one, double volume_L, double pH_step) {
-  const AdditionRule* rule = rule_for(type, one.item->stock.id);
-  double largest_rise =
-      one.item->largest_rise_g_per_L.value_or(rule ? rule->largest_rise_g_per_L : bath::not_given);
-  constexpr double rounding = 1e-9;  // an addition of exactly the rule's size is one portion
-  int portions = 1;
-  if (largest_rise > 0)
-    portions = std::max(
-        portions, static_cast<int>(
-                      std::ceil(one.kg * one.item->stock.assay * 1000 / volume_L / largest_rise - rounding)));
-  if (rule && rule->largest_pH_step > 0)
-    portions =
-        std::max(portions, static_cast<int>(std::ceil(std::abs(pH_step) / rule->largest_pH_step - rounding)));
-  return portions;
-}
-
-std::string degrees(units::Celsius t) { return significant(t.v, 3) + " degC"; }
-
-/// One check per watched solid and temperature.
-void check_solids(const Chemistry& chemistry, const TankView& view, std::vector<Check>& checks) {
-  for (const Headroom& room : view.headroom) {
-    if (room.slow) continue;
-    const auto judge = [&](double log10_room, bool covered, units::Celsius t, bool stops) {
-      if (!covered) return;
-      const bool ok = log10_room >= 0;
-      std::string detail = significant(100 * std::pow(10, -log10_room), 3) + " % of saturation";
-      if (!ok && !room.sign_in_tank.empty()) detail += ": " + room.sign_in_tank;
-      checks.push_back({room.solid + " at " + degrees(t), ok, stops, std::move(detail)});
-    };
-    judge(room.working_log10, room.covers_working, chemistry.working_temperature(), true);
-    // What crystallises over an idle weekend is for a person to weigh: the aims may allow nothing else.
-    judge(room.idle_log10, room.covers_idle, chemistry.idle_temperature(), false);
-  }
-}
-
-void check_volume(const Tank& tank, const TankView& view, std::vector<Check>& checks) {
-  const double brim = tank.working_volume.v + tank.freeboard.v;
-  checks.push_back({"freeboard", view.volume_L <= brim, true,
-                    significant(view.volume_L, 5) + " L of " + significant(brim, 5) + " L to the brim"});
-}
-
-/// The bath type's hard limits on what it holds, sodium and calcium among them; a step may not cross one, or
-/// go farther beyond it than the tank already is.
-void check_limits(const BathType& type, const TankView& before, const TankView& view,
-                  std::vector<Check>& checks) {
-  for (std::size_t q = 0; q < type.quantities.size(); ++q)
-    for (const bath::Window& window : type.windows) {
-      if (window.subject != type.quantities[q].id) continue;
-      const double level = view.quantity_g_per_L[q], was = before.quantity_g_per_L[q];
-      const bool over = level > window.stop_high && level > was,
-                 under = level < window.stop_low && level < was;
-      if (over || under)
-        checks.push_back({type.quantities[q].label, false, true,
-                          significant(level, 3) + " g/L, stop " + (over ? "above " : "below ") +
-                              significant(over ? window.stop_high : window.stop_low, 3)});
-    }
-}
-
-/// A tank that starts outside may stay there until its pH is trimmed, but no step may take it farther out.
-void check_pH(const Tank& tank, const BathType& type, double pH_at_start, const TankView& view,
-              std::vector<Check>& checks) {
-  double low = -HUGE_VAL, high = HUGE_VAL;
-  if (const bath::Aim* aim = tank.aim("pH")) low = aim->low, high = aim->high;
-  for (const bath::Window& window : type.windows)
-    if (window.subject == "pH") {
-      low = std::isnan(window.stop_low) ? std::min(low, window.low) : window.stop_low;
-      high = std::isnan(window.stop_high) ? std::max(high, window.high) : window.stop_high;
-    }
-  constexpr double margin = 0.1;  // salts move the pH a little without adding acid
-  const bool ok =
-      !(view.pH < std::min(low, pH_at_start - margin)) && !(view.pH > std::max(high, pH_at_start + margin));
-  checks.push_back({"pH on the way", ok, true,
-                    "pH " + significant(view.pH, 3) + ", stop below " + significant(low, 3) + " and above " +
-                        significant(high, 3)});
-}
+/// One chemical on its way into the tank.
+struct Going {
+  Portioned what;
+  Place place;
+  [[nodiscard]] const matter::StockChemical& stock() const { return what.item->stock; }
+  [[nodiscard]] bool is_water() const { return place.role == Role::water; }
+};
 
 Addition addition_of(const bath::ShelfItem& item, double kg) {
   Addition addition;
@@ -117,82 +41,248 @@ Addition addition_of(const bath::ShelfItem& item, double kg) {
   return addition;
 }
 
+/// Whole portions that keep each within its largest single rise, pH step and warming.
+int portions_of(const Tank& tank, const AdditionRule* rule, const Portioned& one, double volume_L,
+                double pH_step, double warms_C) {
+  constexpr double rounding = 1e-9;  // an addition of exactly the rule's size is one portion
+  const auto at_most = [&](double whole, double largest) {
+    return largest > 0 ? static_cast<int>(std::ceil(std::abs(whole) / largest - rounding)) : 1;
+  };
+  const double rise = one.kg * one.item->stock.assay * 1000 / volume_L;
+  const double largest_rise =
+      one.item->largest_rise_g_per_L.value_or(rule ? rule->largest_rise_g_per_L : bath::not_given);
+  const int least = rule && rule->half_then_analyse ? 2 : 1;
+  const int needed =
+      std::max({least, at_most(rise, largest_rise), at_most(pH_step, rule ? rule->largest_pH_step : 0),
+                at_most(std::max(0.0, warms_C), tank.dosing.largest_warming_C)});
+  return needed % least == 0 ? needed : needed + 1;  // a half is a whole number of portions
+}
+
+/// The water of the fill, of which the steps take what they need to dissolve in.
+class Fill {
+ public:
+  explicit Fill(double kg) : left_kg_(kg) {}
+
+  /// Gives a step its liquid; returns the kg of water that goes into the tank with it.
+  double dissolve(const DissolvingNeed& need, Step& step, double tank_L) {
+    if (!need.apart) return 0;
+    step.dissolve_at_C = need.at_C;
+    const double water_kg = need.water_L_per_kg.value_or(0) * step.kg * water_kg_per_L();
+    if (need.water_L_per_kg && water_kg <= left_kg_) {
+      left_kg_ -= water_kg;
+      step.dissolve_in_L = *need.water_L_per_kg * step.kg;
+      step.dissolve_in = "water";
+      step.checks.push_back(dissolves(need, step, true));
+      return water_kg;
+    }
+    if (need.bath_L_per_kg) {
+      constexpr double most_drawn_off = 0.2;
+      step.dissolve_in_L = *need.bath_L_per_kg * step.kg;
+      step.dissolve_in = "bath drawn off";
+      step.checks.push_back(dissolves(need, step, *step.dissolve_in_L <= most_drawn_off * tank_L));
+      return 0;
+    }
+    step.checks.push_back(
+        {"dissolving apart", false, false,
+         "the bath takes no more of it and the fill is too small to dissolve it in: hang it in a "
+         "bag in the flow, or dissolve it in hot water and let as much evaporate first"});
+    return 0;
+  }
+
+  [[nodiscard]] double left_kg() const { return left_kg_; }
+
+ private:
+  static double water_kg_per_L() { return matter::water_density(units::Celsius{20}).v; }
+  static Check dissolves(const DissolvingNeed& need, const Step& step, bool ok) {
+    std::string detail = significant(*step.dissolve_in_L, 3) + " L of " + step.dissolve_in + ", " + need.from;
+    if (!ok) detail += "; more than a fifth of the tank: in smaller lots, or in a bag in the flow";
+    return {"dissolving apart", ok, false, std::move(detail)};
+  }
+  double left_kg_;
+};
+
+/// Walks through a plan: state, equilibrium and checks after each portion.
+class Walk {
+ public:
+  Walk(const Tank& tank, const Chemistry& chemistry, TankState state)
+      : tank_(tank), chemistry_(chemistry), type_(chemistry.type()), state_(std::move(state)) {}
+
+  Result<Steps> run(std::vector<Portioned> amounts, Sequence sequence) {
+    auto now = chemistry_.speciate(state_);
+    if (!now) return now.problems();
+    now_ = *std::move(now);
+    auto start = chemistry_.quick_view(state_);
+    if (!start) return start.problems();
+    start_ = *std::move(start);
+    gases_.emplace(chemistry_, now_, at_aims());
+    held_ = bath::held_by(chemistry_, state_, now_.pH());
+
+    std::vector<Going> going;
+    for (const Portioned& one : amounts)
+      going.push_back({one, place_of(type_, held_, now_.pH(), one.item->stock)});
+    refuse_what_must_not_meet(going);
+    if (sequence == Sequence::by_rule) std::ranges::stable_sort(going, goes_before, &Going::place);
+    if (Outcome planned = plan_liquids(going); !planned) return planned.problems();
+    for (std::size_t i = 0; i < going.size(); ++i)
+      if (Outcome added = add(going, i); !added) return added.problems();
+    result_.final_state = std::move(state_);
+    return std::move(result_);
+  }
+
+ private:
+  std::optional<Equilibrium> at_aims() const {
+    const auto state = bath::state_at_aims(tank_, chemistry_);
+    if (!state) return std::nullopt;
+    auto solved = chemistry_.speciate(*state);
+    if (!solved) return std::nullopt;
+    return *std::move(solved);
+  }
+
+  void refuse_what_must_not_meet(std::vector<Going>& going) {
+    std::vector<std::string> out;
+    for (std::size_t i = 0; i < going.size(); ++i)
+      for (std::size_t j = i + 1; j < going.size(); ++j) {
+        const auto found = bath::interlock_between(type_, going[i].stock(), going[j].stock());
+        if (!found) continue;
+        const std::string pair = going[i].stock().name + " and " + going[j].stock().name;
+        if (found->level == bath::Level::stop) {
+          result_.refused.push_back(
+              {pair + " must not be in one plan: " + found->why, "interlock: " + found->rule});
+          out.push_back(going[i].stock().id);
+          out.push_back(going[j].stock().id);
+        } else {
+          result_.keep_apart.push_back(
+              pair + " never meet outside the tank, not in a can, a side tank or on one trolley: " +
+              found->why + ".");
+        }
+      }
+    std::erase_if(going, [&](const Going& one) { return std::ranges::count(out, one.stock().id) > 0; });
+  }
+
+  /// What each chemical is dissolved in, and how much of the fill is left as the fill.
+  Outcome plan_liquids(const std::vector<Going>& going) {
+    double fill_kg = 0;
+    for (const Going& one : going)
+      if (one.is_water()) {
+        fill_kg += one.what.kg;
+        water_per_kg_ = one.what.brings->water_kg;
+      }
+    Fill trial(fill_kg);
+    for (const Going& one : going) {
+      needs_.push_back(dissolving_need(chemistry_, state_, one.stock(), *one.what.brings,
+                                       rule_for(type_, one.stock().id), one.place.role));
+      Step whole;
+      whole.kg = one.what.kg;
+      takes_kg_.push_back(trial.dissolve(needs_.back(), whole, start_.volume_L));
+      if (takes_kg_.back() == 0) needs_.back().water_L_per_kg.reset();
+    }
+    fill_share_ = fill_kg > 0 ? trial.left_kg() / fill_kg : 0;
+    return Done{};
+  }
+
+  Outcome add(const std::vector<Going>& going, std::size_t index) {
+    const Going& one = going[index];
+    if (const auto lock = bath::interlock(type_, held_, one.stock());
+        lock && lock->level == bath::Level::stop) {
+      result_.refused.push_back(
+          {one.stock().id + " must not go into this tank: " + lock->why, "interlock: " + lock->rule});
+      return Done{};
+    }
+    result_.additions.push_back(addition_of(*one.what.item, one.what.kg));
+    const double kg = one.is_water() ? fill_share_ * one.what.kg : one.what.kg;
+    if (kg <= 0) return Done{};
+    const AdditionRule* rule = rule_for(type_, one.stock().id);
+    TankState whole = Chemistry::after(state_, *one.what.brings, kg);
+    whole.water_kg += takes_kg_[index] * water_per_kg_;
+    const auto after = chemistry_.speciate(whole);
+    if (!after) return after.problems();
+    const double warms_C = warming_C(one.stock(), kg, state_);
+    const int portions = one.is_water() ? 1
+                                        : portions_of(tank_, rule, one.what, chemistry_.volume_L(whole),
+                                                      after->pH() - now_.pH(), warms_C);
+    for (int portion = 1; portion <= portions; ++portion)
+      if (Outcome done = carry(going, index, kg, portion, portions); !done) return done;
+    held_ = bath::held_by(chemistry_, state_, now_.pH());
+    return Done{};
+  }
+
+  Outcome carry(const std::vector<Going>& going, std::size_t index, double kg, int portion, int portions) {
+    const Going& one = going[index];
+    const AdditionRule* rule = rule_for(type_, one.stock().id);
+    Step step;
+    step.number = static_cast<int>(result_.steps.size()) + 1;
+    step.chemical = one.stock().id;
+    step.name = one.stock().name;
+    step.kg = kg / portions;
+    step.unit = one.stock().liquid ? "L" : "kg";
+    step.amount = one.stock().liquid ? step.kg / one.stock().kg_per_L : step.kg;
+    step.portion = portion;
+    step.portions = portions;
+    step.why_here = one.place.why;
+    if (rule) step.how = rule->how;
+    if (rule) step.wait_h = rule->wait_h;
+    step.analyse_after = rule && rule->half_then_analyse && portion == portions / 2;
+    step.warms_C = warming_C(one.stock(), step.kg, state_);
+    Fill fill(takes_kg_[index] / portions * (1 + 1e-12));
+    const double water_kg = water_per_kg_ * fill.dissolve(needs_[index], step, chemistry_.volume_L(state_));
+
+    TankState portion_state = state_;
+    std::ranges::fill(portion_state.component_mol, 0);
+    portion_state.water_kg = water_kg;
+    portion_state = Chemistry::after(std::move(portion_state), *one.what.brings, step.kg);
+    const TankState before = state_;
+    state_ = Chemistry::after(std::move(state_), *one.what.brings, step.kg);
+    state_.water_kg += water_kg;
+
+    auto view = chemistry_.quick_view(state_);
+    if (!view) return view.problems();
+    step.predicted = *std::move(view);
+    auto after = chemistry_.speciate(state_);
+    if (!after) return after.problems();
+    check_tank(tank_, chemistry_, start_, step.predicted, step.checks);
+    check_warming(tank_, step.warms_C, step.checks);
+    gases_->check_tank(*after, held_, step.checks);
+    check_dosing_point(tank_, chemistry_, before, portion_state, now_, *after, one.stock(), *gases_,
+                       step.checks);
+    check_order(going, index, step);
+    now_ = *std::move(after);
+    result_.steps.push_back(std::move(step));
+    return Done{};
+  }
+
+  /// Whether something that the rule has later went in earlier. Where the fill goes is nobody's rule.
+  void check_order(const std::vector<Going>& going, std::size_t index, Step& step) const {
+    for (std::size_t i = 0; i < index; ++i)
+      if (!going[index].is_water() && !going[i].is_water() &&
+          goes_before(going[index].place, going[i].place)) {
+        const bool ordered = rule_for(type_, going[i].stock().id) && rule_for(type_, going[index].stock().id);
+        step.checks.push_back({"order", false, ordered,
+                               going[index].stock().name + " goes in before " + going[i].stock().name + ": " +
+                                   going[index].place.why});
+        return;
+      }
+  }
+
+  const Tank& tank_;
+  const Chemistry& chemistry_;
+  const bath::BathType& type_;
+  TankState state_;
+  Equilibrium now_;
+  bath::TankView start_;
+  bath::Held held_;
+  std::optional<GasRule> gases_;
+  std::vector<DissolvingNeed> needs_;  ///< of each chemical, without water where the fill does not reach
+  std::vector<double> takes_kg_;       ///< of the fill, by each
+  double water_per_kg_ = 1;            ///< of the fill
+  double fill_share_ = 1;              ///< of the fill that is left to fill with
+  Steps result_;
+};
+
 }  // namespace
 
 Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState state,
-                         std::vector<Portioned> amounts) {
-  const BathType& type = chemistry.type();
-  std::stable_sort(amounts.begin(), amounts.end(),
-                   [&](const Portioned& a, const Portioned& b) { return place(type, a) < place(type, b); });
-  Steps result;
-  const auto at_start = chemistry.quick_view(state);
-  if (!at_start) return at_start.problems();
-  for (const Portioned& one : amounts) {
-    const TankState whole = Chemistry::after(state, *one.brings, one.kg);
-    const auto before = chemistry.speciate(state), after = chemistry.speciate(whole);
-    if (!before) return before.problems();
-    if (!after) return after.problems();
-    const AdditionRule* rule = rule_for(type, one.item->stock.id);
-    const int portions = portions_of(type, one, chemistry.volume_L(whole), after->pH() - before->pH());
-    const Addition addition = addition_of(*one.item, one.kg);
-    for (int portion = 1; portion <= portions; ++portion) {
-      Step step;
-      step.number = static_cast<int>(result.steps.size()) + 1;
-      step.chemical = addition.chemical;
-      step.name = addition.name;
-      step.unit = addition.unit;
-      step.kg = one.kg / portions;
-      step.amount = addition.amount / portions;
-      step.portion = portion;
-      step.portions = portions;
-      if (rule) step.how = rule->how;
-      if (rule) step.wait_h = rule->wait_h;
-      state = Chemistry::after(std::move(state), *one.brings, step.kg);
-      auto predicted = chemistry.quick_view(state);
-      if (!predicted) return predicted.problems();
-      step.predicted = *std::move(predicted);
-      check_volume(tank, step.predicted, step.checks);
-      check_pH(tank, type, at_start->pH, step.predicted, step.checks);
-      check_limits(type, *at_start, step.predicted, step.checks);
-      check_solids(chemistry, step.predicted, step.checks);
-      result.steps.push_back(std::move(step));
-    }
-    result.additions.push_back(addition);
-  }
-  result.final_state = std::move(state);
-  return result;
-}
-
-std::vector<std::string> cautions_for(const Tank& tank, const BathType& type, const Plan& plan) {
-  std::vector<std::string> cautions;
-  const auto say = [&](const std::string& text) {
-    if (std::find(cautions.begin(), cautions.end(), text) == cautions.end()) cautions.push_back(text);
-  };
-  const auto added = [&](const std::string& id) {
-    return std::any_of(plan.additions.begin(), plan.additions.end(),
-                       [&](const Addition& a) { return a.chemical == id; });
-  };
-  const auto stock_name = [&](const std::string& id) {
-    const bath::ShelfItem* item = tank.on_shelf(id);
-    return item ? item->stock.name + ": " : std::string();
-  };
-  const auto matters = [&](const std::string& subject) {
-    return subject.empty() || added(subject) || tank.aim(subject) != nullptr;
-  };
-  std::vector<std::string> spoken_for;  // chemicals the bath type itself warns of
-  for (const bath::Level level : {bath::Level::stop, bath::Level::warn, bath::Level::notice})
-    for (const bath::Caution& caution : type.cautions)
-      if (caution.level == level && matters(caution.subject)) {
-        say(stock_name(caution.subject) + caution.text);
-        spoken_for.push_back(caution.subject);
-      }
-  for (const Addition& addition : plan.additions)
-    if (const bath::ShelfItem* item = tank.on_shelf(addition.chemical);
-        item && std::find(spoken_for.begin(), spoken_for.end(), addition.chemical) == spoken_for.end())
-      for (const std::string& caution : item->stock.cautions) say(item->stock.name + ": " + caution);
-  say("The supplier's safety data sheet, local codes and licensed practice decide; this sheet does not "
-      "replace them.");
-  return cautions;
+                         std::vector<Portioned> amounts, Sequence sequence) {
+  return Walk(tank, chemistry, std::move(state)).run(std::move(amounts), sequence);
 }
 
 }  // namespace bathwright::dosing

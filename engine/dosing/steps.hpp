@@ -15,12 +15,21 @@ struct Steps {
   std::vector<Addition> additions;
   std::vector<Step> steps;
   bath::TankState final_state;
+  std::vector<Refusal> refused;         ///< by an interlock; what they name has no step
+  std::vector<std::string> keep_apart;  ///< as Plan::keep_apart
 };
 
-/// Water first (the fill), then by the bath type's order; each chemical in equal portions none of which
-/// breaks its single-addition rule; every portion speciated and checked.
+enum class Sequence : std::uint8_t {
+  by_rule,  ///< as order.hpp has it
+  as_given  ///< somebody's own; a check of each step says where the rule has it otherwise
+};
+
+/// Each chemical in equal portions none of which breaks its single-addition rule or warms the tank too much,
+/// dissolved or thinned apart in water taken from the fill, in bath drawn off where that is used up; every
+/// portion speciated in the whole tank and where it goes in, and checked. What an interlock forbids is
+/// refused.
 Result<Steps> make_steps(const bath::Tank& tank, const bath::Chemistry& chemistry, bath::TankState state,
-                         std::vector<Portioned> amounts);
+                         std::vector<Portioned> amounts, Sequence sequence = Sequence::by_rule);
 
 /// What must be said before anybody opens a bag: the bath type's cautions, then each chemical's, then who
 /// decides.

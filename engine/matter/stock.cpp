@@ -33,6 +33,13 @@ double StockChemical::mol_per_kg() const {
   return assay * 1000 / parsed->molar_mass().v;
 }
 
+double StockChemical::water_kg_per_kg() const {
+  if (!liquid) return 0;
+  double water = 1 - assay;
+  for (const Impurity& impurity : contains) water -= impurity.fraction;
+  return water;
+}
+
 const StockCatalogue& StockCatalogue::built_in() {
   static const StockCatalogue catalogue = [] {
     StockCatalogue c;
@@ -47,6 +54,7 @@ const StockCatalogue& StockCatalogue::built_in() {
       const auto row = pairs[i];
       const auto text = [&](std::string_view column) { return std::string(row[column]); };
       c.incompatibilities_.push_back({text("id"), text("a"), text("b"), text("result"), text("severity"),
+                                      row.list("kinds_a"), row.list("kinds_b"), row["always"] == "yes",
                                       text("practice"), text("source")});
     }
     return c;

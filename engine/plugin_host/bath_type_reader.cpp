@@ -18,7 +18,7 @@ constexpr bw_datum unknown_datum = {unknown, unknown, 0, 0};
 
 // What a row holds where the plugin is silent, if not zero everywhere.
 constexpr bw_window open_window = {nullptr, unknown, unknown, unknown, unknown, unknown, 0, 0};
-constexpr bw_addition_rule open_rule = {nullptr, nullptr, unknown, unknown, 0, 0, 0};
+constexpr bw_addition_rule open_rule = {nullptr, nullptr, unknown, unknown, 0, 0, 0, 0, 0, 0};
 constexpr bw_own_species unknown_species = {nullptr, nullptr, unknown_datum, unknown_datum, unknown_datum, 0};
 constexpr bw_own_solid unknown_solid = {
     nullptr, nullptr, nullptr, nullptr, unknown_datum, unknown_datum, unknown_datum, unknown, unknown, 0, 0};
@@ -307,7 +307,9 @@ class Reader {
                                 positive_or_nan("largest_pH_step", row.largest_pH_step),
                                 number({"additions", n, "wait_h"}, row.wait_h, 0, largest),
                                 text({"additions", n, "how"}, row.how, Need::required, Length::generous),
-                                source_key({"additions", n, "source"}, row.source)});
+                                source_key({"additions", n, "source"}, row.source),
+                                number({"additions", n, "thin_to_parts"}, row.thin_to_parts, 0, largest),
+                                row.half_then_analyse != 0});
     }
   }
 

@@ -1,5 +1,6 @@
 // Safety by formula: what a bath type that holds something deadly must say and forbid.
 #include <algorithm>
+#include <bathwright/matter/reactive_kind.hpp>
 #include <bathwright/matter/stock.hpp>
 #include <cctype>
 
@@ -8,32 +9,23 @@
 namespace bathwright::plugin_host {
 namespace {
 
-/// What can kill or maim, how its formulae are told, and a word that its caution cannot do without.
+/// What can kill or maim, by its kinds, and a word that its caution cannot do without.
 struct Deadly {
   const char* common_name;
-  std::initializer_list<const char*> in_formula;
+  std::initializer_list<const char*> kinds;
   std::initializer_list<const char*> words;
 };
 
 const Deadly deadly_substances[] = {
-    {"cyanide", {"CN^-", "(CN)", "HCN", "NaCN", "KCN", "CuCN", "AgCN"}, {"cyanide"}},
-    {"chromium(VI)", {"CrO4", "Cr2O7", "CrO3"}, {"chromium(VI)", "chromic"}},
-    {"fluoride", {"F", "F2", "F4", "F6"}, {"hydrofluoric", "hydrogen fluoride"}},
-    {"formaldehyde", {"CH2O", "CH2(OH)2"}, {"formaldehyde"}},
-    {"a strong oxidiser", {"H2O2", "ClO3", "MnO4", "S2O8", "ClO^-", "NaClO"}, {"oxidiser"}},
-    {"hydrazine", {"N2H4", "N2H5"}, {"hydrazine"}},
+    {"cyanide", {"cyanide", "bound-cyanide"}, {"cyanide"}},
+    {"chromium(VI)", {"chromium-6"}, {"chromium(VI)", "chromic"}},
+    {"fluoride", {"fluoride"}, {"hydrofluoric", "hydrogen fluoride"}},
+    {"formaldehyde", {"formaldehyde"}, {"formaldehyde"}},
+    {"a strong oxidiser",
+     {"peroxide", "chlorate", "permanganate", "hypochlorite", "other-oxidiser"},
+     {"oxidiser"}},
+    {"hydrazine", {"hydrazine"}, {"hydrazine"}},
 };
-
-/// Whether `part` stands in `formula` as a whole: "F" in "NaF" and "F^-", not in "Fe" or "F6".
-bool holds(const std::string& formula, const std::string& part) {
-  for (std::size_t at = formula.find(part); at != std::string::npos; at = formula.find(part, at + 1)) {
-    const std::size_t end = at + part.size();
-    const bool goes_on = end < formula.size() && (std::islower(static_cast<unsigned char>(formula[end])) ||
-                                                  std::isdigit(static_cast<unsigned char>(formula[end])));
-    if (!goes_on) return true;
-  }
-  return false;
-}
 
 bool mentions(const std::string& text, const Deadly& substance) {
   std::string lower = text;
@@ -55,8 +47,8 @@ void check_safety(const bath::BathType& type, Report& report) {
       formulas.push_back(stock->formula);
   for (const Deadly& substance : deadly_substances) {
     const auto held = std::ranges::find_if(formulas, [&](const std::string& formula) {
-      return std::ranges::any_of(substance.in_formula,
-                                 [&](const char* part) { return holds(formula, part); });
+      return std::ranges::any_of(substance.kinds,
+                                 [&](const char* kind) { return matter::is_of_kind(formula, kind); });
     });
     if (held == formulas.end()) continue;
     const bool told = std::ranges::any_of(type.cautions, [&](const bath::Caution& caution) {

@@ -312,41 +312,49 @@ Change by_interaction(const activity::InteractionNote& note, const Equilibrium& 
 
 }  // namespace
 
-Result<std::vector<Shift>> independent_shifts(const Solver& solver, const Task& task,
-                                              const Equilibrium& answer, const InputUncertainty& input) {
-  const auto sensitivity = Sensitivity::at(solver, task, answer);
-  if (!sensitivity) return sensitivity.problems();
+std::vector<Doubt> doubts(const Solver& solver, const Equilibrium& answer) {
   const ChemicalSystem& system = solver.system();
-  std::vector<Shift> shifts;
-  const auto by_each = [&](std::vector<double> Change::*field, std::size_t count, auto standard_uncertainty) {
-    Change change;
-    (change.*field).assign(count, 0);
-    for (std::size_t i = 0; i < count; ++i) {
-      const double u = standard_uncertainty(i);
+  std::vector<Doubt> all;
+  const auto of_constants = [&](Doubt::Of of, std::vector<double> Change::*field, const auto& rows,
+                                auto counts) {
+    for (std::size_t i = 0; i < rows.size(); ++i) {
+      const double u = counts(i) ? rows[i].constant.uncertainty_at(solver.temperature()) : 0;
       if (u == 0) continue;
-      (change.*field)[i] = u;
-      shifts.push_back(sensitivity->respond(change));
-      (change.*field)[i] = 0;
+      Doubt doubt{of, {static_cast<std::uint32_t>(i)}, {}};
+      (doubt.change.*field).assign(rows.size(), 0);
+      (doubt.change.*field)[i] = u * std::numbers::ln10;
+      all.push_back(std::move(doubt));
     }
   };
-  const auto of_constant = [&](const auto& rows) {
-    return [&](std::size_t i) {
-      return rows[i].constant.uncertainty_at(solver.temperature()) * std::numbers::ln10;
-    };
-  };
-  by_each(&Change::ln_K_species, system.species().size(),
-          [&](std::size_t j) { return answer.molality[j] > 0 ? of_constant(system.species())(j) : 0.0; });
-  by_each(&Change::ln_K_solids, system.solids().size(), of_constant(system.solids()));
-  by_each(&Change::ln_K_gases, system.gases().size(), of_constant(system.gases()));
-  by_each(&Change::component_mol, input.component_mol.size(),
-          [&](std::size_t i) { return input.component_mol[i]; });
+  const auto every = [](std::size_t) { return true; };
+  of_constants(Doubt::Of::species, &Change::ln_K_species, system.species(),
+               [&](std::size_t j) { return answer.molality[j] > 0; });
+  of_constants(Doubt::Of::solid, &Change::ln_K_solids, system.solids(), every);
+  of_constants(Doubt::Of::gas, &Change::ln_K_gases, system.gases(), every);
   // An interaction that moves no coefficient by a thousandth moves nothing a person could see.
   constexpr double seen = 1e-3;
   for (const activity::InteractionNote& note : solver.model().notes()) {
     if (note.u_ln_gamma == 0) continue;
-    const Change change = by_interaction(note, answer);
-    if (*std::max_element(change.ln_gamma.begin(), change.ln_gamma.end()) > seen)
-      shifts.push_back(sensitivity->respond(change));
+    Doubt doubt{
+        Doubt::Of::interaction, {static_cast<std::uint32_t>(note.kind)}, by_interaction(note, answer)};
+    doubt.which.insert(doubt.which.end(), note.solutes.begin(), note.solutes.end());
+    if (*std::ranges::max_element(doubt.change.ln_gamma) > seen) all.push_back(std::move(doubt));
+  }
+  return all;
+}
+
+Result<std::vector<Shift>> independent_shifts(const Solver& solver, const Task& task,
+                                              const Equilibrium& answer, const InputUncertainty& input) {
+  const auto sensitivity = Sensitivity::at(solver, task, answer);
+  if (!sensitivity) return sensitivity.problems();
+  std::vector<Shift> shifts;
+  for (const Doubt& doubt : doubts(solver, answer)) shifts.push_back(sensitivity->respond(doubt.change));
+  for (std::size_t i = 0; i < input.component_mol.size(); ++i) {
+    if (input.component_mol[i] == 0) continue;
+    Change change;
+    change.component_mol.assign(input.component_mol.size(), 0);
+    change.component_mol[i] = input.component_mol[i];
+    shifts.push_back(sensitivity->respond(change));
   }
   if (input.water_kg != 0) {
     Change change;

@@ -322,6 +322,11 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
   LaneProblem problem(w);
   LaneTables tables(w);
   Task varied = task;
+  const auto vary = [&](const Variant& variant) {
+    varied.component_mol = variant.component_mol;
+    varied.pH = task.pH;
+    if (varied.pH && variant.pH) varied.pH->pH = *variant.pH;
+  };
   Session alone(*s.solver);  // for those that leave the lanes
   constexpr int most_changes = 8;
   for (std::size_t first = 0; first < variants.size(); first += lanes) {
@@ -330,7 +335,7 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
     nominal.restore(w);
     for (std::size_t lane = 0; lane < lanes; ++lane) {
       const Variant& variant = variants[first + std::min(lane, count - 1)];
-      varied.component_mol = variant.component_mol;
+      vary(variant);
       in_lane[lane] = lane < count && check(s.solver->system(), varied) && w.reload(varied, variant.ln_K);
       if (!in_lane[lane]) w.reload(task, own);
       problem.set_lane(lane, w);
@@ -348,7 +353,7 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
     }
     for (std::size_t lane = 0; lane < count; ++lane) {
       const Variant& variant = variants[first + lane];
-      varied.component_mol = variant.component_mol;
+      vary(variant);
       s.ln_K = variant.ln_K;
       Outcome found = Done{};
       bool settled = in_lane[lane] && arrived[lane];

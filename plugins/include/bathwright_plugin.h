@@ -1,5 +1,5 @@
 /* The C interface between Bathwright and a bath-type plugin: what a bath is made of, which limits, rules and
- * cautions it has, as constant tables, and the few figures that need code. C11 and C++20. Version 1.0.
+ * cautions it has, as constant tables, and the few figures that need code. C11 and C++20. Version 1.1.
  *
  * Rules
  * R1 Only fixed-width integers, doubles and pointers cross. No C++ type, exception, longjmp, signal handler,
@@ -38,7 +38,7 @@ extern "C" {
 #endif
 
 #define BW_ABI_MAJOR 1u /* part of the entry's name: a changed field, meaning, unit or call order */
-#define BW_ABI_MINOR 0u /* +1 for every appended field, code or table                             */
+#define BW_ABI_MINOR 1u /* +1 for every appended field, code or table                             */
 
 typedef int32_t bw_status; /* negative values are reserved for the host */
 enum {
@@ -191,6 +191,10 @@ typedef struct bw_addition_rule {
   double wait_h;            /* after it, before the next addition, >= 0 */
   uint32_t order;           /* smaller goes in earlier */
   uint32_t source;          /* R6 */
+  /* since 1.1 */
+  double thin_to_parts;       /* a liquid: thinned with so many volumes of water first; 0: as it is */
+  uint32_t half_then_analyse; /* 1: half the need, then an analysis before the rest */
+  uint32_t reserved;          /* 0 */
 } bw_addition_rule;
 
 /* What must never go into the bath, or never meet it. */

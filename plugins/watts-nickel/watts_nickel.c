@@ -84,17 +84,17 @@ static const bw_addition_rule additions[] = {
      "Dissolve in hot bath or hot water in a side tank and filter in, or hang it in a bag in the flow of an "
      "anode "
      "corner; never loose into the tank.",
-     5, OPEN, 2, 1, COMMON_PRACTICE},
+     5, OPEN, 2, 1, COMMON_PRACTICE, 0, 0, 0},
     {"nickel-sulfate", "Dissolve hot in a side tank, treat with carbon, filter in.", 10, OPEN, 0.75, 2,
-     COMMON_PRACTICE},
+     COMMON_PRACTICE, 0, 0, 0},
     {"nickel-chloride", "Dissolve in a side tank (it dissolves fast) and filter in.", 10, OPEN, 0.75, 3,
-     COMMON_PRACTICE},
+     COMMON_PRACTICE, 0, 0, 0},
     {"sulfuric-acid",
      "Dilute one to ten first, the acid into cold stirred water; run in slowly at the filter return.", OPEN,
-     0.2, 0.25, 4, COMMON_PRACTICE},
+     0.2, 0.25, 4, COMMON_PRACTICE, 10, 0, 0},
     {"nickel-carbonate",
      "Slurry in a vented side tank or on the filter and circulate until it is gone; filter out the residue.",
-     OPEN, 0.2, 0.25, 4, COMMON_PRACTICE},
+     OPEN, 0.2, 0.25, 4, COMMON_PRACTICE, 0, 0, 0},
 };
 
 static const bw_caution cautions[] = {

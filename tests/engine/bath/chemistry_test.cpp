@@ -95,6 +95,18 @@ TEST_CASE("what is weighed in arrives", "[property][bath]") {
     CHECK(brings.component_mol[0] == Approx(-6 * mol).epsilon(1e-4));
     CHECK(brings.water_kg == Approx(9 * mol * 0.0180153).epsilon(1e-4));
   }
+  SECTION("what a lot contains beside its substance comes along, its charge made up by the counter-ion") {
+    // 1 kg of boric acid with 0.2 % chloride: 2/35.45 mol, in place of half as much sulfate.
+    matter::StockChemical lot = demo::stock("boric-acid");
+    const auto clean = must(demo::chemistry().brings(lot));
+    lot.contains = {{"Cl^-", 0.002}};
+    const auto brings = must(demo::chemistry().brings(lot));
+    const auto chloride = *demo::chemistry().working().system().component("Cl^-");
+    const auto sulfate = *demo::chemistry().working().system().component("SO4^2-");
+    CHECK(brings.component_mol[chloride] == Approx(2 / 35.45).epsilon(1e-4));
+    CHECK(brings.component_mol[sulfate] == Approx(-1 / 35.45).epsilon(1e-4));
+    CHECK(brings.component_mol[0] == clean.component_mol[0]);
+  }
   SECTION("a chemical the bath type does not know is refused by name") {
     const auto brings = demo::chemistry().brings(demo::stock("sodium-hypophosphite"));
     REQUIRE_FALSE(brings);

@@ -44,7 +44,7 @@ struct StatedBath {
   std::vector<bw_window> windows = {{"Ni^2+", 50, 60, 70, 40, 80, 1, 0},
                                     {"pH", 1, open, 3, open, open, 1, 0}};
   std::vector<bw_addition_rule> additions = {
-      {"nickel-chloride", "dissolve in a side tank", 10, open, 1, 1, 1}};
+      {"nickel-chloride", "dissolve in a side tank", 10, open, 1, 1, 1, 0, 0, 0}};
   std::vector<bw_caution> cautions = {{"nickel-chloride", "Toxic.", BW_STOP, 1}};
   std::vector<bw_indicator> indicators = {{"chloride", "chloride", "shows the anodes", "g/L", chloride}};
   std::vector<bw_use> uses = {{"plating",

@@ -151,6 +151,24 @@ TEST_CASE("variants solved side by side are those solved one by one", "[property
   });
 }
 
+TEST_CASE("a variant may hold another pH than the task", "[property]") {
+  const Solver solver = solver_of({"SO4^2-", "Na^+", "H3BO3"});
+  Task task = task_of(solver.system(), {{"Na^+", 2}, {"SO4^2-", 1}, {"H3BO3", 0.6}});
+  task.pH = HeldPh{4, *solver.system().component("SO4^2-")};
+  std::vector<Variant> variants;
+  for (int n = 0; n < 11; ++n) variants.push_back({task.component_mol, solver.ln_K(), 3 + 0.3 * n});
+  variants.push_back({task.component_mol, solver.ln_K()});  // that of the task
+  Session together(solver);
+  REQUIRE(together.solve_variants(
+      task, variants, [&](std::size_t n, const Outcome& solved, const Equilibrium& found) {
+        REQUIRE(solved);
+        Task one = task;
+        one.pH->pH = variants[n].pH.value_or(4);
+        CHECK(found.pH() == Approx(one.pH->pH).margin(1e-9).epsilon(0));
+        CHECK(found.held_ph_mol == Approx(solver.solve(one)->held_ph_mol).epsilon(1e-8));
+      }));
+}
+
 TEST_CASE("a session goes on after a task that cannot be solved", "[failure]") {
   const Solver solver = solver_of({"Na^+", "Cl^-"});
   Session session(solver);

@@ -70,6 +70,8 @@ struct AdditionRule {
   double wait_h = 0;                        ///< before the next addition
   std::string how;                          ///< "dissolve hot in a side tank"
   std::string source;
+  double thin_to_parts = 0;        ///< a liquid: thinned with so many volumes of water first
+  bool half_then_analyse = false;  ///< half the need, then an analysis before the rest
 };
 
 enum class Level : std::uint8_t { notice = 1, warn, stop };

@@ -114,7 +114,9 @@ class Chemistry {
 
   /// What a mol of a formula brings; an ion brings its charge with it. Fails as brings().
   [[nodiscard]] Result<Brings> brings_per_mol(const matter::Formula& formula) const;
-  /// What a kg of a product brings. Fails when its substance needs a component the bath type does not have.
+  /// What a kg of a product brings, what its lot contains beside its substance included: of an ion, the
+  /// charge is made up by the component found by charge. Fails when something needs a component the bath type
+  /// does not have.
   [[nodiscard]] Result<Brings> brings(const matter::StockChemical& stock) const;
 
   /// The state after `kg` of something is stirred in.

@@ -2,7 +2,7 @@
 // does. Read next: bath/chemistry.hpp, which computes every prediction here.
 #pragma once
 
-#include <bathwright/bath/chemistry.hpp>
+#include <bathwright/dosing/chance.hpp>
 
 namespace bathwright::dosing {
 
@@ -12,6 +12,7 @@ struct Check {
   bool ok = true;
   bool stops = true;   ///< failing it makes the plan infeasible; else it is something to know (the idle tank)
   std::string detail;  ///< "12 kg more would dissolve"
+  bool interlock = false;  ///< about a gas that kills: nobody may let it pass
 };
 
 /// The whole amount of one chemical.
@@ -30,11 +31,26 @@ struct Step {
   std::string chemical, name, unit;
   double amount = 0, kg = 0;
   int portion = 1, portions = 1;        ///< "2 of 3"
-  std::optional<double> dissolve_in_L;  ///< water to dilute or dissolve it in first, taken from the fill
+  std::optional<double> dissolve_in_L;  ///< to thin or dissolve it in first
+  std::string dissolve_in;              ///< "water" (taken from the fill) or "bath drawn off"
+  double dissolve_at_C = 0;             ///< of that liquid
   std::string how;
-  double wait_h = 0;         ///< before the next step
-  bath::TankView predicted;  ///< after this step (levels, pH, volume, headroom in log units)
+  std::string
+      why_here;        ///< why at this place in the order: "before the metal, which it must hold in solution"
+  double warms_C = 0;  ///< the whole tank, by the heat of dilution; negative: cools
+  double wait_h = 0;   ///< before the next step
+  bool analyse_after = false;  ///< half of the need is in: analyse before the rest
+  bath::TankView predicted;    ///< after this step (levels, pH, volume, headroom in log units)
   std::vector<Check> checks;
+};
+
+/// What takes a level that ends too high out of the tank as a solid, to be filtered off.
+struct Removal {
+  std::string quantity, label;  ///< "SO4^2-", "sulfate"
+  std::string chemical, name;   ///< stock id, "barium carbonate"
+  std::string solid;            ///< "BaSO4"
+  double whole_kg = 0;          ///< for all that is above the aim, by the formula of the solid
+  double first_kg = 0;          ///< to begin with; then the tank is analysed again
 };
 
 struct Plan {
@@ -42,19 +58,20 @@ struct Plan {
   std::string reason;     ///< what sets it apart from the others: "cheapest of those that reach every aim"
   bool feasible = false;  ///< every level ends inside its window, every check passed that stops a plan
   double cost = 0;
-  double salt_load_mol = 0;  ///< ions brought in, mol: what makes the next bleed larger
-  double decant_L = 0;       ///< bath to take out before anything is added; it is waste
-  /// Chance that every controlled quantity ends inside its window, from the analysis' uncertainty alone,
-  /// errors taken as independent and normal; nothing where no uncertainty was given.
-  std::optional<double> probability_in_window;
-  std::vector<Addition> additions;  ///< in order of addition; empty when nothing is needed
+  double salt_load_mol = 0;               ///< ions brought in, mol: what makes the next bleed larger
+  double decant_L = 0;                    ///< bath to take out before anything is added; it is waste
+  std::optional<Chances> chances;         ///< of its end; where Request::spread is given
+  std::optional<SecondLook> second_look;  ///< what would help most, of the best plan where it is no promise
+  std::vector<Addition> additions;        ///< in order of addition; empty when nothing is needed
   std::vector<Step> steps;
   bath::TankView final_view;
   bath::TankState final_state;
   std::vector<std::string>
       unmet;  ///< aims that cannot be reached with this shelf, by how much, whether inside
   std::vector<std::string> left_alone;  ///< what lies inside the noise of its analysis and is not corrected
+  std::vector<Removal> removals;        ///< once the plan is carried out, mixed and analysed; no step of it
   std::vector<std::string> conflicts;   ///< why windows cannot be met: the limits in each other's way
+  std::vector<std::string> keep_apart;  ///< its chemicals that must not meet outside the tank, and why
 };
 
 struct Refusal {
@@ -71,10 +88,12 @@ struct AdditionSheet {
 /// What plans are asked for, beside what the tank file says.
 struct Request {
   /// One standard uncertainty of the present level, g/L by quantity id; may be empty.
-  std::map<std::string, double> uncertainty;
-  bool dead_band = true;  ///< false: to the aim, however near the tank is already
-  bool weighable = true;  ///< amounts as a shop's scales and jugs show them; false: unrounded
-  int most_plans = 4;     ///< at least 1
+  std::map<std::string, double> uncertainty = {};
+  bool dead_band = true;              ///< false: to the aim, however near the tank is already
+  bool weighable = true;              ///< amounts as a shop's scales and jugs show them; false: unrounded
+  int most_plans = 4;                 ///< at least 1
+  std::optional<Spread> spread = {};  ///< given: how sure each plan is to end inside every window
+  Sampling sampling = {};             ///< of that
 };
 
 /// Plans the additions that bring the tank from `now` to its aims, filled to the mark: the best plan first,

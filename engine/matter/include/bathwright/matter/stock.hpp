@@ -12,6 +12,12 @@
 
 namespace bathwright::matter {
 
+/// What a lot holds beside its substance, as its certificate says.
+struct Impurity {
+  std::string formula;  ///< of an ion or a neutral substance
+  double fraction = 0;  ///< kg of it per kg of product
+};
+
 struct StockChemical {
   std::string id;                    ///< "nickel-sulfate"
   std::vector<std::string> aliases;  ///< other ids in use, accepted everywhere
@@ -21,6 +27,7 @@ struct StockChemical {
   bool liquid = false;
   double assay = 1;                                            ///< kg of `formula` per kg of product
   double kg_per_L = std::numeric_limits<double>::quiet_NaN();  ///< liquids at 20 degC; NaN for solids
+  std::vector<Impurity> contains;                              ///< of this lot
   std::vector<std::string> hazard_statements;                  ///< codes, "H314"
   std::vector<std::string> incompatible_with;                  ///< ids of Incompatibility
   std::vector<std::string> cautions;
@@ -30,13 +37,16 @@ struct StockChemical {
   [[nodiscard]] double mol_per_kg() const;
   /// kg of water in a kg of product beside `formula`: the rest of a liquid is water, the rest of a solid is
   /// taken as inert. Crystal water belongs to `formula`.
-  [[nodiscard]] double water_kg_per_kg() const { return liquid ? 1 - assay : 0; }
+  [[nodiscard]] double water_kg_per_kg() const;
 };
 
 /// Two kinds of substance that must not meet, and what happens when they do.
 struct Incompatibility {
   std::string id, a, b, result;
   std::string severity;  ///< "stop", "warn" or "info"
+  /// The two sides as ids of reactive_kinds(); empty where no formula tells them.
+  std::vector<std::string> kinds_a, kinds_b;
+  bool always = false;  ///< no bath type's own rule of addition lets it through
   std::string practice, source;
 };
 

@@ -60,10 +60,23 @@ struct InputUncertainty {
   double temperature_K = 0;
 };
 
-/// What one standard uncertainty of each source does to an answer, first order: of the constants
-/// (Constant::uncertainty_at), the activity coefficients (InteractionNote::u_ln_gamma) and the inputs.
-/// Sources are independent of each other: u of a quantity is the root of the sum of squares of its shifts.
-/// Fails as Sensitivity::at.
+/// One standard uncertainty of a constant (Constant::uncertainty_at) or of an interaction
+/// (InteractionNote::u_ln_gamma). Doubts of one answer are independent of each other; equal ones of two
+/// answers of a system, at other amounts or temperatures, are the same doubt.
+struct Doubt {
+  enum class Of : std::uint8_t { species, solid, gas, interaction } of;
+  std::vector<std::uint32_t> which;  ///< position in the system; of an interaction its kind, then its solutes
+  Change change;
+
+  [[nodiscard]] bool same_as(const Doubt& other) const { return of == other.of && which == other.which; }
+};
+
+/// All that count in this answer of the solver.
+[[nodiscard]] std::vector<Doubt> doubts(const Solver& solver, const Equilibrium& answer);
+
+/// What one standard uncertainty of each source does to an answer, first order: of its doubts and of the
+/// inputs. Sources are independent of each other: u of a quantity is the root of the sum of squares of its
+/// shifts. Fails as Sensitivity::at.
 Result<std::vector<Shift>> independent_shifts(const Solver& solver, const Task& task,
                                               const Equilibrium& answer, const InputUncertainty& input = {});
 

@@ -4,14 +4,17 @@
 
 #include <bathwright/speciation/solver.hpp>
 #include <functional>
+#include <optional>
 #include <span>
 
 namespace bathwright::speciation {
 
-/// Other amounts and constants for one task: a sample of an uncertainty.
+/// Other amounts and constants for one task: a sample of an uncertainty. Amounts are for the task's water:
+/// what holds another amount of water is scaled to it.
 struct Variant {
   std::vector<double> component_mol;  ///< per component, mol; what the task has none of stays out
   Constants ln_K;
+  std::optional<double> pH{};  ///< in place of the pH the task holds; nothing: that one
 };
 
 class Session {
