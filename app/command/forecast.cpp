@@ -7,9 +7,12 @@
 #include <bathwright/shopfiles/policy_file.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
+#include <csignal>
+#include <cstdio>
 #include <fstream>
 #include <iostream>
 #include <thread>
+#include <utility>
 
 #include "context.hpp"
 #include "tank_state.hpp"
@@ -19,23 +22,93 @@ namespace {
 
 using forecast::Forecast;
 
+/// Ctrl-C while samples run: they stop at the end of the day they are at.
+volatile std::sig_atomic_t interrupted = 0;
+
 struct Options {
   std::string tank, policy, readings, csv, chart;
+  std::vector<std::string> against;
   int samples = 200;
   std::uint64_t seed = 1;
 };
 
+Json by_quantity(const std::vector<double>& values, const bath::BathType& type) {
+  Json all = Json::object();
+  for (std::size_t q = 0; q < type.quantities.size(); ++q) all[type.quantities[q].id] = values[q];
+  return all;
+}
+
+void add_ledger(Json& doc, const forecast::Run& run, const bath::BathType& type) {
+  doc["chemicals"] = Json::array();
+  for (const auto& one : run.ledger.chemicals)
+    doc["chemicals"].push_back({{"chemical", one.stock}, {"kg", one.kg}, {"cost", one.cost}});
+  doc["flows_kg"] = Json::object();
+  for (const auto& flow : run.ledger.flows) doc["flows_kg"][flow.name] = by_quantity(flow.kg, type);
+  doc["metal"] = Json::array();
+  for (const auto& metal : run.ledger.metals)
+    doc["metal"].push_back({{"quantity", metal.quantity},
+                            {"element", metal.element},
+                            {"dragged_kg", metal.dragged_kg},
+                            {"bled_kg", metal.bled_kg},
+                            {"deposited_kg", metal.deposited_kg},
+                            {"cost", metal.cost}});
+}
+
+Json json_of(const forecast::Rinsed& rinsed, const bath::BathType& type) {
+  Json stages = Json::array();
+  for (const auto& stage : rinsed.stages)
+    stages.push_back({{"name", stage.name}, {"concentrations", by_quantity(stage.g_per_L, type)}});
+  return {{"stages", stages},
+          {"returned_L_per_day", rinsed.returned_L_per_day},
+          {"treatment",
+           {{"L_per_day", rinsed.waste_L_per_day},
+            {"kg_per_day", by_quantity(rinsed.kg_per_day, type)},
+            {"g_per_L", by_quantity(rinsed.g_per_L, type)}}},
+          {"carried_kg_per_day", by_quantity(rinsed.carried_kg_per_day, type)}};
+}
+
+Json json_of(const sheets::PolicySummary& one, bool cheapest) {
+  const forecast::Summary& s = one.summary;
+  Json met = Json::array();
+  for (const auto& limit : s.met) met.push_back({{"name", limit.name}, {"day", or_null(limit.day)}});
+  return {{"policy", one.file},
+          {"horizon_days", one.horizon_days},
+          {"cost_per_day", s.cost},
+          {"waste_cost_per_day", s.waste_cost},
+          {"waste_L_per_day", s.waste_L},
+          {"water_L_per_day", s.top_up_L},
+          {"metal_lost_kg_per_day", s.metal_lost_kg},
+          {"metal_lost_cost_per_day", s.metal_lost_cost},
+          {"limits_met", met},
+          {"holds", s.holds},
+          {"cheapest_that_holds", cheapest}};
+}
+
 Json json_of(const sheets::ForecastPage& page) {
   const bath::BathType& type = page.forecast.chemistry().type();
-  Json doc = document({});
+  std::vector<std::string> warnings = page.forecast.notes();
+  for (const Problem& problem : page.run.ended) warnings.push_back(problem.text());
+  Json doc = document(warnings);
   doc["tank"] = page.tank.name;
   doc["policy"] = page.policy_file;
   doc["state_from"] = page.state_from;
   doc["horizon_days"] = page.run.days.back().day;
   doc["samples"] = page.bands ? page.bands->samples : 0;
+  const auto date = [&](const std::optional<double>& day) {
+    if (!day) return Json();
+    const auto ymd = page.forecast.policy().calendar.date(static_cast<int>(std::floor(*day)));
+    if (!ymd) return Json();
+    char text[16];
+    std::snprintf(text, sizeof text, "%04d-%02u-%02u", static_cast<int>(ymd->year()),
+                  static_cast<unsigned>(ymd->month()), static_cast<unsigned>(ymd->day()));
+    return Json(text);
+  };
   doc["limits"] = Json::array();
   for (const auto& limit : page.limits)
     doc["limits"].push_back({{"name", limit.name},
+                             {"quantity", limit.quantity.empty() ? Json() : Json(limit.quantity)},
+                             {"g_per_L", limit.quantity.empty() ? Json() : Json(limit.g_per_L)},
+                             {"date", date(limit.day)},
                              {"kind", limit.quantity.empty() ? "solid" : "level"},
                              {"cause", forecast::name(limit.cause)},
                              {"day", or_null(limit.day)},
@@ -48,7 +121,11 @@ Json json_of(const sheets::ForecastPage& page) {
     for (std::size_t q = 0; q < type.quantities.size(); ++q)
       doc["steady_state"][type.quantities[q].id] = (*page.steady_state)[q];
   doc["bleed_to_hold"] = Json::object();
-  for (const auto& bleed : page.bleeds) doc["bleed_to_hold"][bleed.limit] = bleed.litres_per_day;
+  doc["largest_load"] = Json::object();
+  for (const auto& bleed : page.bleeds) {
+    doc["bleed_to_hold"][bleed.limit] = bleed.litres_per_day;
+    doc["largest_load"][bleed.limit] = or_null(bleed.load);
+  }
   doc["series"] = Json::array();
   for (const forecast::Day& day : page.run.days) {
     Json row{
@@ -58,6 +135,7 @@ Json json_of(const sheets::ForecastPage& page) {
     for (std::size_t s = 0; s < type.solids.size(); ++s)
       row["headroom"][type.solids[s].name] = {{"working_log10", day.working_log10[s]},
                                               {"idle_log10", day.idle_log10[s]}};
+    row["volume_L"] = day.volume_L;
     row["cost"] = day.cost;
     row["waste_L"] = day.waste_L;
     row["drag_out_L"] = day.drag_out_L;
@@ -72,7 +150,31 @@ Json json_of(const sheets::ForecastPage& page) {
                                              {"p50", page.bands->quantity[q].p50},
                                              {"p95", page.bands->quantity[q].p95}};
   doc["balance"] = page.run.balance;
+  doc["sensitivity"] = Json::array();
+  for (const auto& of_limit : page.sensitivity) {
+    Json influences = Json::array();
+    for (const auto& one : of_limit.influences)
+      influences.push_back({{"input", one.input},
+                            {"u_rel", one.u_rel},
+                            {"day_lower", or_null(one.day_lower)},
+                            {"day_higher", or_null(one.day_higher)},
+                            {"days", one.days}});
+    doc["sensitivity"].push_back({{"limit", of_limit.limit}, {"influences", influences}});
+  }
+  add_ledger(doc, page.run, type);
+  if (!page.run.rinsed.stages.empty()) doc["rinses"] = json_of(page.run.rinsed, type);
+  doc["policies"] = Json::array();
+  const auto* best = sheets::cheapest_that_holds(page.policies);
+  for (const auto& one : page.policies) doc["policies"].push_back(json_of(one, &one == best));
   return doc;
+}
+
+/// Faults found beyond the reading of a policy, with its file.
+Problems of_file(const std::string& file, Problems problems) {
+  for (Problem& problem : problems)
+    if (problem.where.find(file) == std::string::npos)
+      problem.where = file + (problem.where.empty() ? "" : ": " + problem.where);
+  return problems;
 }
 
 /// One row a day, g/L by quantity, as spreadsheets read it (RFC 4180).
@@ -101,7 +203,8 @@ Outcome write_csv(const std::string& path, const sheets::ForecastPage& page) {
   return Problem{Fault::io, path, "could not be written", "", "Check the folder and its rights."};
 }
 
-/// The bleed that holds each level that rises to its limit and that nobody puts back.
+/// The bleed that holds each level that rises to its limit and that nobody puts back, and the work that the
+/// policy's own bleed can carry.
 Result<std::vector<sheets::BleedToHold>> bleeds(const Forecast& forecast, const bath::TankState& start,
                                                 const std::vector<forecast::LimitMet>& limits) {
   std::vector<sheets::BleedToHold> all;
@@ -111,11 +214,59 @@ Result<std::vector<sheets::BleedToHold>> bleeds(const Forecast& forecast, const 
       continue;
     const auto bleed = forecast.bleed_to_hold(start, limit.quantity, limit.g_per_L);
     if (!bleed) return bleed.problems();
-    if (*bleed)
-      all.push_back({forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
-                         units::significant(limit.g_per_L) + " g/L",
-                     **bleed});
+    if (!*bleed) continue;
+    const auto load = forecast.largest_load(start, limit.quantity, limit.g_per_L);
+    if (!load) return load.problems();
+    all.push_back({forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
+                       units::significant(limit.g_per_L) + " g/L",
+                   **bleed, *load});
   }
+  return all;
+}
+
+/// Samples with progress on a terminal; Ctrl-C stops them.
+Result<forecast::Bands> sampled(const Context& context, const Options& options, const Forecast& forecast,
+                                const bath::TankState& start) {
+  Forecast::Sampling sampling;
+  sampling.samples = options.samples;
+  sampling.seed = options.seed;
+  sampling.threads = std::max(1u, std::thread::hardware_concurrency());
+  const bool tell = !context.json && ::isatty(STDERR_FILENO) != 0;
+  double reached = 0;
+  int told = -1;
+  auto* const before = std::signal(SIGINT, [](int) { interrupted = 1; });
+  auto bands = forecast.sample(start, sampling, [&](double share) {
+    reached = share;
+    const int per_cent = static_cast<int>(100 * share);
+    if (tell && per_cent != std::exchange(told, per_cent))
+      std::cerr << "\r" << per_cent << " % of the samples, Ctrl-C stops" << std::flush;
+    return interrupted == 0;
+  });
+  std::signal(SIGINT, before);
+  if (tell) std::cerr << "\r                                   \r" << std::flush;
+  if (bands || interrupted == 0) return bands;
+  return Problem{Fault::io, "forecast",
+                 "stopped by Ctrl-C after " + std::to_string(static_cast<int>(100 * reached)) +
+                     " % of the samples; nothing was written",
+                 "", "Ask for fewer with --samples; 0 leaves them out."};
+}
+
+/// Each of the files as a policy of this tank, to set beside the first.
+Result<std::vector<sheets::PolicySummary>> others(const Options& options, const Shop& shop,
+                                                  const bath::TankState& start) {
+  std::vector<sheets::PolicySummary> all;
+  Problems problems;
+  for (const std::string& file : options.against) {
+    const auto policy = shopfiles::read_policy(file, shop.type());
+    const auto forecast =
+        policy ? Forecast::prepare(shop.tank, shop.chemistry, *policy) : Result<Forecast>(policy.problems());
+    const auto run = forecast ? forecast->run(start) : Result<forecast::Run>(forecast.problems());
+    if (run)
+      all.push_back({file, policy->horizon_days, forecast->summary(*run, forecast->limits(*run))});
+    else
+      for (const Problem& problem : of_file(file, run.problems())) problems.push_back(problem);
+  }
+  if (!problems.empty()) return problems;
   return all;
 }
 
@@ -127,24 +278,15 @@ int run(const Context& context, const Options& options) {
   const auto start = starting_state(context, *shop, options.readings);
   if (!start) return fail(context, start.problems());
   const auto forecast = Forecast::prepare(shop->tank, shop->chemistry, *policy);
-  if (!forecast) return fail(context, forecast.problems());
+  if (!forecast) return fail(context, of_file(options.policy, forecast.problems()));
   const auto one = forecast->run(start->state);
   if (!one) return fail(context, one.problems());
 
   std::optional<forecast::Bands> bands;
   if (options.samples > 0) {
-    Forecast::Sampling sampling;
-    sampling.samples = options.samples;
-    sampling.seed = options.seed;
-    sampling.threads = std::max(1u, std::thread::hardware_concurrency());
-    const bool tell = !context.json && ::isatty(STDERR_FILENO) != 0;
-    auto sampled = forecast->sample(start->state, sampling, [&](double share) {
-      if (tell) std::cerr << "\r" << static_cast<int>(100 * share) << " % of the samples" << std::flush;
-      return true;
-    });
-    if (tell) std::cerr << "\r                        \r" << std::flush;
-    if (!sampled) return fail(context, sampled.problems());
-    bands = *std::move(sampled);
+    auto drawn = sampled(context, options, *forecast, start->state);
+    if (!drawn) return fail(context, drawn.problems());
+    bands = *std::move(drawn);
   }
   const auto settled = forecast->steady_state(start->state);
   sheets::ForecastPage page{shop->tank,
@@ -156,10 +298,24 @@ int run(const Context& context, const Options& options) {
                             settled ? "nothing leaves the tank" : settled.problems().front().what,
                             {},
                             options.policy,
-                            start->read.from};
+                            start->read.from,
+                            {},
+                            {}};
   auto held = bleeds(*forecast, start->state, page.limits);
   if (!held) return fail(context, held.problems());
   page.bleeds = *std::move(held);
+  if (options.samples > 0) {
+    auto moved = forecast->sensitivity(start->state);
+    if (!moved) return fail(context, moved.problems());
+    page.sensitivity = *std::move(moved);
+  }
+  if (!options.against.empty()) {
+    auto beside = others(options, *shop, start->state);
+    if (!beside) return fail(context, beside.problems());
+    page.policies = *std::move(beside);
+    page.policies.insert(page.policies.begin(), {options.policy, policy->horizon_days,
+                                                 forecast->summary(*one, forecast->limits(*one))});
+  }
   if (!options.csv.empty())
     if (const Outcome written = write_csv(options.csv, page); !written)
       return fail(context, written.problems());
@@ -171,7 +327,7 @@ int run(const Context& context, const Options& options) {
   else
     print(sheets::forecast_sheet(page));
   const bool met = std::ranges::any_of(page.limits, [](const auto& limit) { return limit.share > 0; });
-  return met ? Exit::finding : Exit::all_well;
+  return met || !one->ended.empty() ? Exit::finding : Exit::all_well;
 }
 
 }  // namespace
@@ -189,9 +345,14 @@ void add_forecast(CLI::App& program, Context& context, Action& action) {
   verb->add_option("--samples", options->samples, "runs with everything uncertain drawn; 0: none")
       ->check(CLI::Range(0, 100000));
   verb->add_option("--seed", options->seed, "of the samples: the same seed, the same figures");
+  verb->add_option("--against", options->against, "other policies to set beside it; may be repeated")
+      ->check(CLI::ExistingFile);
   verb->add_option("--csv", options->csv, "also write one row a day to this file");
   verb->add_option("--chart", options->chart, "also draw it: FILE.svg, FILE.png or FILE.pdf");
-  verb->footer("Example: bathwright forecast baths/al-1.toml baths/policies/al-1.toml\n");
+  verb->footer(
+      "Example: bathwright forecast baths/al-1.toml baths/policies/al-1.toml\n"
+      "         bathwright forecast baths/e-02.toml baths/policies/e-02.toml --against "
+      "baths/policies/e-02-bleed.toml\n");
   verb->callback(
       [&context, &action, options] { action = [&context, options] { return run(context, *options); }; });
 }

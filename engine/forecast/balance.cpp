@@ -1,6 +1,8 @@
 #include "balance.hpp"
 
 #include <algorithm>
+#include <bathwright/bath/at_aims.hpp>
+#include <bathwright/bath/interlock.hpp>
 #include <bathwright/matter/formula.hpp>
 #include <cmath>
 
@@ -195,6 +197,14 @@ class Compiler {
     out_.uses.push_back(std::move(compiled));
   }
 
+  /// What the tank holds at its aims; where they make no state, the bath type's own rules are left.
+  bath::Held held_at_aims() const {
+    const auto state = bath::state_at_aims(tank_, chemistry_);
+    if (!state) return {};
+    const auto solved = chemistry_.speciate(*state);
+    return solved ? bath::held_by(chemistry_, *state, solved->pH()) : bath::Held{};
+  }
+
   void clock_use(const bath::Use& use) {
     out_.always.push_back(out_.uses.size());
     if (use.counted_in == CountedIn::m2_surface_hour && !tank_.surface)
@@ -242,6 +252,13 @@ class Compiler {
     if (!item) {
       problems_.push_back(
           unknown("'" + rule.stock + "' is not on the shelf of " + tank_.name, "a shelf item"));
+      return;
+    }
+    const auto lock = bath::interlock(chemistry_.type(), held_at_aims(), item->stock);
+    if (lock && lock->level == bath::Level::stop) {
+      problems_.push_back({Fault::refused, "replenishment with " + rule.stock,
+                           "must not go into this bath (" + lock->rule + "): " + lock->why, "",
+                           "There is no way round this."});
       return;
     }
     const auto brought = brings(item->stock);

@@ -11,6 +11,8 @@ inline constexpr Range liquid_bath_C{-10, 110};        // salt-laden baths freez
 inline constexpr Range possible_factor{0.5, 2};        // actual over nominal strength of a titrant
 inline constexpr Range possible_displacement{0, 0.5};  // anodes, coils and parts take 3 to 8 % (from memory)
 inline constexpr Range possible_molality{0, 100};      // mol/kg; solid caustic soda in water is below 60
+inline constexpr Range possible_warming{0.1, 40};      // degC, of a tank by one portion
+inline constexpr Range possible_mixing{0.001, 1};      // share of the tank a portion meets first
 inline constexpr Range possible_pressure_atm{0, 100};
 
 }  // namespace bathwright::shopfiles

@@ -25,12 +25,14 @@ std::string local_date_time(std::string text) {
   return tree && tree->items[0].kind == Node::Kind::moment ? tree->items[0].text : "";
 }
 
+bool has_time_of_day(const std::string& moment) { return moment.find('T') != std::string::npos; }
+
 std::string read_sampled(Table& root) {
   constexpr std::string_view example = "2026-03-02T05:40:00";
   const Node* written = root.any({"sampled", optional, example});
   if (!written) return "";
   std::string moment = written->kind == Node::Kind::text ? local_date_time(written->text) : written->text;
-  if (written->kind == Node::Kind::number || moment.empty()) {
+  if (written->kind == Node::Kind::number || !has_time_of_day(moment)) {
     root.report("sampled", "is not a local date and time",
                 "year-month-dayThour:minute:second, as " + std::string(example), "Leave the time zone out.");
   }

@@ -1,11 +1,13 @@
 #include "shelf.hpp"
 
+#include <array>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/matter/water.hpp>
 #include <bathwright/units/read.hpp>
 
 #include "assay.hpp"
+#include "local_date.hpp"
 
 namespace bathwright::shopfiles {
 namespace {
@@ -47,14 +49,24 @@ void report_unknown(Table& shelf, const std::string& id, const matter::StockCata
                meant ? "Did you mean " + *meant + '?' : "");
 }
 
-void read_assay_of_lot(Table& entry, StockChemical& stock, const matter::Formula& formula, Need need) {
-  const std::string written = entry.text({"assay", need, R"("99 %" or "22.2 %w/w Ni")"});
-  if (written.empty()) return;
-  if (const auto assay = read_assay(written, formula, entry.where("assay"))) {
-    stock.assay = *assay;
-  } else {
-    entry.report("assay", assay.problems());
-  }
+/// A share of the substance at `key`; nothing where it is left out, or reported.
+std::optional<double> read_share(Table& entry, const Key& key, const matter::Formula& formula) {
+  const std::string written = entry.text(key);
+  if (written.empty()) return std::nullopt;
+  const auto share = read_assay(written, formula, entry.where(key.name));
+  if (share) return *share;
+  entry.report(key.name, share.problems());
+  return std::nullopt;
+}
+
+void read_assay_of_lot(Table& entry, ShelfItem& item, const matter::Formula& formula, Need need) {
+  const auto assay = read_share(entry, {"assay", need, R"("99 %" or "22.2 %w/w Ni")"}, formula);
+  const auto u = read_share(entry, {"assay_uncertainty", optional, R"("0.3 %")"}, formula);
+  if (assay) item.stock.assay = *assay;
+  if (u && *u < item.stock.assay)
+    item.u_assay_rel = *u / item.stock.assay;
+  else if (u)
+    entry.report("assay_uncertainty", "is as large as the assay", R"(one standard uncertainty, as "0.3 %")");
 }
 
 /// kg or L in one of the unit that a price is for: 0.4536 kg for "lb".
@@ -124,11 +136,48 @@ std::optional<double> read_largest_rise(Table& entry, const StockChemical& stock
   return std::nullopt;
 }
 
+/// The name of a chemical whose bag holds another formula than the catalogue's: "nickel(II) sulfate
+/// heptahydrate". Of what is not even the same salt, the formula itself.
+std::string name_as_in_bag(const StockChemical& stock, const std::string& formula) {
+  constexpr std::array<std::string_view, 13> hydrates{
+      "", "mono", "di", "tri", "tetra", "penta", "hexa", "hepta", "octa", "nona", "deca", "undeca", "dodeca"};
+  const auto salt = [](const std::string& text) { return text.substr(0, text.find('.')); };
+  if (salt(formula) != salt(stock.formula)) return formula;
+  std::string name = stock.name;
+  if (const std::size_t last = name.rfind(' '); last != std::string::npos && name.ends_with("hydrate"))
+    name.erase(last);
+  if (salt(formula) == formula) return name + ", anhydrous";
+  for (std::size_t n = 1; n < hydrates.size(); ++n)
+    if (formula == salt(formula) + "." + (n == 1 ? "" : std::to_string(n)) + "H2O")
+      return name + " " + std::string(hydrates[n]) + "hydrate";
+  return formula;
+}
+
+/// What the certificate of the lot finds beside the substance.
+std::vector<matter::Impurity> read_contents(Table& entry) {
+  std::vector<matter::Impurity> contents;
+  auto contains = entry.table({"contains", optional, R"({ "SO4^2-" = "0.05 %" })"});
+  if (!contains) return contents;
+  for (const std::string& name : contains->names()) {
+    const std::string written = contains->text({name, required, R"("0.05 %")"});
+    if (const auto formula = matter::Formula::parse(name, contains->where(name)); !formula)
+      contains->report(name, formula.problems());
+    if (const auto fraction = units::read_fraction(written, contains->where(name)))
+      contents.push_back({name, *fraction});
+    else if (!written.empty())
+      contains->report(name, fraction.problems());
+  }
+  return contents;
+}
+
 void read_item(Table& entry, ShelfItem& item, Need assay) {
   StockChemical& stock = item.stock;
-  if (const auto name = entry.text({"name", optional, R"("nickel sulfate")"}); !name.empty())
-    stock.name = name;
+  const auto name = entry.text({"name", optional, R"("nickel sulfate")"});
   const auto own_formula = entry.text({"formula", optional, R"("NiSO4.7H2O")"});
+  if (!name.empty())
+    stock.name = name;
+  else if (!own_formula.empty() && !stock.formula.empty() && own_formula != stock.formula)
+    stock.name = name_as_in_bag(stock, own_formula);
   if (!own_formula.empty()) stock.formula = own_formula;
   if (const auto density = entry.positive({"density", optional, R"("1.84 kg/L")"}, units::read_density)) {
     stock.liquid = true;
@@ -142,7 +191,11 @@ void read_item(Table& entry, ShelfItem& item, Need assay) {
   }
   // Without a usable formula the rest is still read, so that its own problems are found.
   const matter::Formula substance = formula ? *formula : *matter::Formula::parse("H2O");
-  read_assay_of_lot(entry, stock, substance, assay);
+  read_assay_of_lot(entry, item, substance, assay);
+  stock.contains = read_contents(entry);
+  item.grade = entry.text({"grade", optional, R"("technical")"});
+  item.lot = entry.text({"lot", optional, R"("24-0815")"});
+  item.expires = read_date(entry, {"expires", optional, "2027-06-30"});
   read_price(entry, item);
   item.package = read_package(entry, item);
   item.largest_rise_g_per_L = read_largest_rise(entry, stock, substance);

@@ -3,6 +3,8 @@
 #include <bathwright/shopfiles/tank_file.hpp>
 #include <bathwright/units/read.hpp>
 
+#include "dosing_habits.hpp"
+#include "local_date.hpp"
 #include "ranges.hpp"
 #include "schema.hpp"
 #include "shelf.hpp"
@@ -130,6 +132,15 @@ void read_targets(Table& root, Tank& tank) {
   if (target->names().empty()) root.report("target", "names no quantity", "at least one quantity to hold");
 }
 
+void read_limits(Table& root, Tank& tank) {
+  auto limits = root.table({"limits", optional, R"({ revision = "C", from = 2026-01-15 })"});
+  if (!limits) return;
+  tank.limits.revision = limits->text({"revision", required, R"("C")"});
+  tank.limits.from = read_date(*limits, {"from", optional, "2026-01-15"});
+  tank.limits.owner = limits->text({"owner", optional, R"("process chemist")"});
+  tank.limits.source = limits->text({"source", optional, R"("supplier sheet of 2025-11")"});
+}
+
 }  // namespace
 
 Result<Tank> read_tank_text(std::string_view name, std::string_view text,
@@ -143,13 +154,17 @@ Result<Tank> read_tank_text(std::string_view name, std::string_view text,
   tank.bath_type = root.text({"bath_type", required, R"("watts-nickel")"});
   tank.name = root.text({"name", required, R"("N-07 bright nickel")"});
   tank.shop = root.text({"shop", optional, R"("Brindlewick Surface Works")"});
+  tank.line = root.text({"line", optional, R"("line 2, nickel")"});
   tank.currency = root.text({"currency", optional, R"("EUR")"});
   read_vessel(root, tank);
   read_operating(root, tank);
   read_targets(root, tank);
+  read_limits(root, tank);
   if (auto shelf = root.table({"shelf", optional, R"({ boric-acid = { price = 1.90, unit = "kg" } })"})) {
     tank.shelf = read_shelf(*shelf, catalogue);
   }
+  if (auto dosing = root.table({"dosing", optional, R"({ dead_band = "2 %" })"}))
+    tank.dosing = read_dosing_habits(*dosing);
   return file.conclude(std::move(tank));
 }
 

@@ -40,3 +40,33 @@ TEST_CASE("a policy that is none is told where", "[failure][app]") {
   CHECK(run.status == 2);
   CHECK(run.err.find("policy.toml:2") != std::string::npos);
 }
+
+TEST_CASE("policies are set side by side and the cheapest that holds is named", "[unit][app]") {
+  const Bench bench;
+  const std::string baths = PROJECT_DIR "/baths/";
+  bench.write("bled.toml", bench.read(baths + "policies/al-1.toml") + "\n[bleed]\nrate = \"250 L/d\"\n");
+  bench.write("lavish.toml", bench.read(baths + "policies/al-1.toml") + "\n[bleed]\nrate = \"320 L/d\"\n");
+  const std::string line = "forecast " + baths + "al-1.toml " + baths +
+                           "policies/al-1.toml --samples 0 --against bled.toml --against lavish.toml ";
+  const auto run = bench.run(line + "--json");
+  INFO(run.err);
+  const auto policies = run.json().at("policies");
+  REQUIRE(policies.size() == 3);
+  CHECK_FALSE(policies[0].at("holds").get<bool>());
+  CHECK(policies[1].at("holds").get<bool>());
+  CHECK(policies[1].at("cheapest_that_holds").get<bool>());
+  CHECK_FALSE(policies[2].at("cheapest_that_holds").get<bool>());
+  CHECK(policies[2].at("cost_per_day").get<double>() > policies[1].at("cost_per_day").get<double>());
+  const auto sheet = bench.run(line);
+  CHECK(sheet.out.find("Cheapest that holds every limit: bled.toml") != std::string::npos);
+  CHECK(app_test::widest_line(sheet.out) <= 80);
+}
+
+TEST_CASE("a policy with what the tank does not have is told with its file", "[failure][app]") {
+  const Bench bench;
+  bench.write("policy.toml", "[[replenish]]\nchemical = \"nickel-sulfate\"\nper_day = \"1 kg\"\n");
+  const auto run = bench.run("forecast " PROJECT_DIR "/baths/al-1.toml policy.toml");
+  CHECK(run.status == 2);
+  CHECK(run.err.find("policy.toml") != std::string::npos);
+  CHECK(run.err.find("not on the shelf") != std::string::npos);
+}

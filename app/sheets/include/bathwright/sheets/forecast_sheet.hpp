@@ -6,10 +6,19 @@
 
 namespace bathwright::sheets {
 
-/// What a limit needs to be held: litres a day to bleed beyond the policy's own.
+/// What a limit needs to be held.
 struct BleedToHold {
-  std::string limit;
-  double litres_per_day = 0;
+  std::string limit;          ///< "aluminium at 15.00 g/L"
+  double litres_per_day = 0;  ///< to bleed beyond the policy's own
+  /// Times the policy's work that its own bleed can carry; nothing: any.
+  std::optional<double> load;
+};
+
+/// A policy beside others.
+struct PolicySummary {
+  std::string file;
+  int horizon_days = 0;
+  forecast::Summary summary;
 };
 
 struct ForecastPage {
@@ -22,7 +31,12 @@ struct ForecastPage {
   std::string why_unsettled;  ///< where there is none
   std::vector<BleedToHold> bleeds;
   std::string policy_file, state_from;
+  std::vector<forecast::Sensitivity> sensitivity;
+  std::vector<PolicySummary> policies;  ///< this one and those it is set against; empty: none
 };
+
+/// The cheapest of those that hold every limit; nullptr where none does.
+[[nodiscard]] const PolicySummary* cheapest_that_holds(const std::vector<PolicySummary>& policies);
 
 [[nodiscard]] Lines forecast_sheet(const ForecastPage& page);
 
