@@ -14,7 +14,7 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   const auto analysed = analyse(context, *shop, readings_path);
   if (!analysed) return fail(context, analysed.problems());
   const analysis::Analysis& analysis = analysed->analysis;
-  Json doc = analysis_document(shop->tank, shop->type(), analysis);
+  Json doc = analysis_document(shop->tank, shop->chemistry, analysis);
   sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), analysis);
   if (!context.log_file.empty()) {
     const auto entry = entry_computed(*shop, readings_path, logbook::EntryKind::analysis, doc);

@@ -1,9 +1,11 @@
 // bathwright dose TANK READINGS: the addition sheet.
-#include <bathwright/sheets/addition_sheet.hpp>
+#include <algorithm>
 #include <bathwright/sheets/analysis_sheet.hpp>
+#include <fstream>
+#include <thread>
 
-#include "context.hpp"
-#include "tank_state.hpp"
+#include "own_plan.hpp"
+#include "slip.hpp"
 #include "view_json.hpp"
 
 namespace bathwright::command {
@@ -12,8 +14,11 @@ namespace {
 Json json_of(const bath::BathType& type, const dosing::Step& step) {
   Json checks = Json::array();
   for (const auto& check : step.checks)
-    checks.push_back(
-        {{"name", check.name}, {"ok", check.ok}, {"stops", check.stops}, {"detail", check.detail}});
+    checks.push_back({{"name", check.name},
+                      {"ok", check.ok},
+                      {"stops", check.stops},
+                      {"interlock", check.interlock},
+                      {"detail", check.detail}});
   return {{"number", step.number},
           {"chemical", step.chemical},
           {"amount", step.amount},
@@ -21,8 +26,12 @@ Json json_of(const bath::BathType& type, const dosing::Step& step) {
           {"portion", step.portion},
           {"portions", step.portions},
           {"dissolve_in_L", step.dissolve_in_L ? Json(*step.dissolve_in_L) : Json(nullptr)},
+          {"dissolve_in", step.dissolve_in},
           {"how", step.how},
+          {"why_here", step.why_here},
+          {"warms_C", step.warms_C},
           {"wait_h", step.wait_h},
+          {"analyse_after", step.analyse_after},
           {"predicted",
            {{"pH", step.predicted.pH},
             {"volume_L", step.predicted.volume_L},
@@ -30,17 +39,66 @@ Json json_of(const bath::BathType& type, const dosing::Step& step) {
           {"checks", std::move(checks)}};
 }
 
+Json json_of(const dosing::Percentiles& of) { return {of.p05, of.p50, of.p95}; }
+
+/// Share of the samples inside the window, by quantity.
+Json inside(const dosing::Chances& chances) {
+  Json shares = Json::object();
+  for (const auto& level : chances.levels) shares[level.quantity] = level.inside;
+  return shares;
+}
+
+Json json_of(const dosing::Chances& chances) {
+  const auto or_null = [](const std::optional<double>& share) {
+    return share ? Json(*share) : Json(nullptr);
+  };
+  Json levels = Json::object(), solids = Json::object();
+  for (const auto& level : chances.levels) levels[level.quantity] = json_of(level.level);
+  for (const auto& solid : chances.solids)
+    solids[solid.solid] = {{"working", or_null(solid.working)},
+                           {"idle", or_null(solid.idle)},
+                           {"working_log10", json_of(solid.working_log10)},
+                           {"idle_log10", json_of(solid.idle_log10)}};
+  return {{"in_window_and_dissolved", chances.all},
+          {"percentiles_5_50_95", std::move(levels)},
+          {"dissolved", std::move(solids)},
+          {"samples", chances.samples},
+          {"unsolved", chances.unsolved}};
+}
+
+Json json_of(const std::vector<dosing::Removal>& removals) {
+  Json list = Json::array();
+  for (const auto& one : removals)
+    list.push_back({{"quantity", one.quantity},
+                    {"chemical", one.chemical},
+                    {"solid", one.solid},
+                    {"whole", one.whole_kg},
+                    {"first", one.first_kg},
+                    {"unit", "kg"}});
+  return list;
+}
+
 Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
   Json additions = Json::array(), steps = Json::array();
   for (const auto& a : plan.additions)
     additions.push_back({{"chemical", a.chemical}, {"amount", a.amount}, {"unit", a.unit}, {"cost", a.cost}});
   for (const auto& step : plan.steps) steps.push_back(json_of(type, step));
+  Json shares, sampled, second_look;  // null where no chance was asked for
+  if (plan.chances) shares = inside(*plan.chances), sampled = json_of(*plan.chances);
+  if (plan.second_look)
+    second_look = {{"at", plan.second_look->at},
+                   {"probability_in_window", plan.second_look->in_every_window}};
   return {{"kind", plan.kind},
+          {"reason", plan.reason},
           {"feasible", plan.feasible},
           {"cost", plan.cost},
           {"salt_load_mol", plan.salt_load_mol},
-          {"probability_in_window",
-           plan.probability_in_window ? Json(*plan.probability_in_window) : Json(nullptr)},
+          {"decant_L", plan.decant_L},
+          {"waste_L", plan.decant_L},
+          {"probability_in_window", plan.chances ? Json(plan.chances->in_every_window) : Json(nullptr)},
+          {"chances", std::move(shares)},
+          {"sampled", std::move(sampled)},
+          {"second_look", std::move(second_look)},
           {"additions", std::move(additions)},
           {"steps", std::move(steps)},
           {"final",
@@ -48,7 +106,11 @@ Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
             {"volume_L", plan.final_view.volume_L},
             {"concentrations", concentrations(type, plan.final_view)},
             {"headroom", headroom_log10(plan.final_view)}}},
-          {"unmet", plan.unmet}};
+          {"unmet", plan.unmet},
+          {"left_alone", plan.left_alone},
+          {"conflicts", plan.conflicts},
+          {"keep_apart", plan.keep_apart},
+          {"removals", json_of(plan.removals)}};
 }
 
 Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet,
@@ -67,116 +129,73 @@ Json json_of(const Shop& shop, const dosing::AdditionSheet& sheet,
   return doc;
 }
 
-/// What a dose leaves in the log.
-struct LoggedDose {
-  std::vector<std::int64_t> entries;  ///< the analysis, the plan, the slip
-  bool analysis_was_there = false;
-  std::optional<std::int64_t> slip;
-  std::filesystem::path path;
+/// The page in HTML, where a file for it was named.
+Outcome write_html(const std::string& file, const sheets::Page& page) {
+  if (file.empty()) return Done{};
+  std::ofstream out(file, std::ios::binary);
+  out << sheets::html_of(page);
+  out.close();
+  if (out) return Done{};
+  return Problem{Fault::io, file, "the file cannot be written", "", "Check the folder and the disk."};
+}
+
+struct Options {
+  bool issue_slip = false;
+  std::string own_plan;  ///< file; empty: the planner's
+  int samples = dosing::Sampling{}.samples;
+  std::string html;
 };
 
-/// Logs the analysis, unless it is the last in the log, the plan made from it, and the slip where one is
-/// wanted: together or not at all.
-Result<LoggedDose> log_dose(const Context& context, const Shop& shop, const std::string& readings_path,
-                            const Analysed& analysed, const Json& doc, bool issue_slip) {
-  LoggedDose logged;
-  std::vector<logbook::NewEntry> entries;
-  const auto add = [&](logbook::EntryKind kind, Json body) -> Outcome {
-    auto entry = entry_computed(shop, readings_path, kind, std::move(body));
-    if (!entry) return entry.problems();
-    entries.push_back(*std::move(entry));
-    return Done{};
-  };
-  if (analysed.logged_as) {
-    logged.analysis_was_there = true;
-    logged.entries.push_back(*analysed.logged_as);
-  } else if (Outcome added = add(logbook::EntryKind::analysis,
-                                 analysis_document(shop.tank, shop.type(), analysed.analysis));
-             !added) {
-    return added.problems();
-  }
-  if (Outcome added = add(logbook::EntryKind::plan, doc); !added) return added.problems();
-  if (issue_slip)
-    if (Outcome added =
-            add(logbook::EntryKind::slip, {{"plan", doc["plans"].front()}, {"cautions", doc["cautions"]}});
-        !added)
-      return added.problems();
-  auto opened = open_log_to_write(context);
-  if (!opened) return opened.problems();
-  OpenLog open = *std::move(opened);
-  const auto written = append_all(context, open, std::move(entries));
-  if (!written) return written.problems();
-  for (const auto& entry : *written) logged.entries.push_back(entry.seq);
-  if (issue_slip) logged.slip = logged.entries.back();
-  logged.path = open.path;
-  return logged;
-}
-
-sheets::Lines lines_of(const LoggedDose& logged) {
-  sheets::Lines lines;
-  std::string numbers;
-  for (const std::int64_t seq : logged.entries)
-    numbers += (numbers.empty() ? "" : ", ") + std::to_string(seq);
-  if (logged.analysis_was_there)
-    sheets::say(lines,
-                "The analysis is already logged as entry " + std::to_string(logged.entries.front()) + ".");
-  sheets::say(lines, "Logged in " + logged.path.string() + ": entries " + numbers + ".");
-  if (logged.slip)
-    sheets::say(lines, "Slip " + std::to_string(*logged.slip) + " is open: log each step with --slip " +
-                           std::to_string(*logged.slip) + ", then bathwright log close " +
-                           std::to_string(*logged.slip) + ".");
-  return lines;
-}
-
-/// What keeps the best plan from being carried out as it stands; empty where nothing does.
-std::string hindrance(const dosing::AdditionSheet& sheet, const Analysed& analysed) {
-  if (sheet.plans.empty() || !sheet.plans.front().feasible) return "no plan meets every aim";
-  if (sheet.plans.front().additions.empty()) return "there is nothing to add";
-  if (!analysed.analysis.suspects.empty())
-    return "a reading is suspect: " + analysed.analysis.suspects.front().what;
-  return analysed.changed_since.empty() ? "" : analysed.changed_since.front();
-}
-
 int run(const Context& context, const std::string& tank_path, const std::string& readings_path,
-        bool issue_slip) {
+        const Options& options) {
   const auto shop = open_shop(context, tank_path);
   if (!shop) return fail(context, shop.problems());
   const auto analysed = analyse(context, *shop, readings_path);
   if (!analysed) return fail(context, analysed.problems());
   const analysis::Analysis& analysis = analysed->analysis;
+  constexpr std::size_t earlier_results = 3;
+  const auto history = history_of(context, shop->tank.name, earlier_results, analysed->logged_as);
+  if (!history) return fail(context, history.problems());
   dosing::Request request;
-  for (const auto& level : analysis.results)
+  for (const auto& level : analysis.reconciled)
     request.uncertainty[level.quantity] = level.standard_uncertainty.v;
-  const auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, request);
+  if (options.samples > 0) request.spread = dosing::Spread{.covariance = analysis.covariance};
+  request.sampling = {.samples = options.samples,
+                      .threads = std::max(1u, std::thread::hardware_concurrency())};
+  const auto sheet = options.own_plan.empty()
+                         ? dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, request)
+                         : check_own_plan(*shop, analysis.state, options.own_plan);
   if (!sheet) return fail(context, sheet.problems());
-  if (issue_slip) {
+  const auto stops = slip_stops(shop->tank, *analysed, *sheet, *history);
+  if (options.issue_slip) {
     if (context.log_file.empty())
       return fail(context, {{Fault::bad_input, "--slip", "there is no log to number it", "--log FILE", ""}});
-    if (const std::string why = hindrance(*sheet, *analysed); !why.empty())
+    if (const std::string why = hindrance(*sheet, *analysed, stops); !why.empty())
       return fail(context, {{Fault::refused, "--slip", "no slip is issued: " + why, "",
                              "Read the sheet without --slip; settle that first."}});
   }
 
   Json doc = json_of(*shop, *sheet, analysed->changed_since);
+  doc["stops"] = stops;
   std::optional<LoggedDose> logged;
   if (!context.log_file.empty()) {
-    auto done = log_dose(context, *shop, readings_path, *analysed, doc, issue_slip);
+    auto done = log_dose(context, *shop, readings_path, *analysed, doc, options.issue_slip);
     if (!done) return fail(context, done.problems());
     logged = *std::move(done);
     doc["logged_as"] = logged->entries;
     doc["slip"] = logged->slip ? Json(*logged->slip) : Json(nullptr);
   }
+  const sheets::Page page = page_of(context, *shop, {*analysed, *sheet, stops, *history, logged});
   if (context.json) {
     print(doc);
   } else {
-    print(sheets::addition_sheet(
-        shop->tank, shop->type(), analysis, *sheet, analysed->changed_since,
-        {signer(context), context.shift, program_and_version(), logged ? logged->slip : std::nullopt}));
+    print(sheets::text_of(page));
     if (logged) print(lines_of(*logged));
   }
+  if (Outcome written = write_html(options.html, page); !written) return fail(context, written.problems());
   const bool nothing_to_do = !sheet->plans.empty() && sheet->plans.front().feasible &&
                              sheet->plans.front().additions.empty() && analysis.suspects.empty();
-  return nothing_to_do && analysed->changed_since.empty() &&
+  return nothing_to_do && analysed->changed_since.empty() && stops.empty() &&
                  all_in_window(sheets::judge(shop->tank, shop->type(), analysis))
              ? Exit::all_well
              : Exit::finding;
@@ -187,12 +206,19 @@ int run(const Context& context, const std::string& tank_path, const std::string&
 void add_dose(CLI::App& program, Context& context, Action& action) {
   auto* verb =
       program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
-  auto issue_slip = std::make_shared<bool>(false);
-  verb->add_flag("--slip", *issue_slip, "issues the best plan as a numbered slip of the log");
+  auto options = std::make_shared<Options>();
+  verb->add_flag("--slip", options->issue_slip, "issues the best plan as a numbered slip of the log");
+  verb->add_option("--plan", options->own_plan,
+                   "checks this list of additions in place of a plan of its own, TOML")
+      ->check(CLI::ExistingFile);
+  verb->add_option("--samples", options->samples, "tanks drawn for the chance of ending inside; 0: none")
+      ->check(CLI::Range(0, 1000000))
+      ->capture_default_str();
+  verb->add_option("--html", options->html, "writes the sheet to this file too, to print it");
   add_tank_and_readings(
       *verb, context, action,
-      [issue_slip](const Context& given, const std::string& tank, const std::string& readings) {
-        return run(given, tank, readings, *issue_slip);
+      [options](const Context& given, const std::string& tank, const std::string& readings) {
+        return run(given, tank, readings, *options);
       });
   add_signature(*verb, context);
   verb->footer(

@@ -1,19 +1,18 @@
 // bathwright path TANK --add ...: free ions, pH and headroom along an addition.
-#include <bathwright/base/nearest.hpp>
-#include <bathwright/bath/interlock.hpp>
 #include <bathwright/sheets/path_sheet.hpp>
 #include <bathwright/units/read.hpp>
 
 #include "context.hpp"
 #include "tank_state.hpp"
 #include "view_json.hpp"
+#include "wanted.hpp"
 
 namespace bathwright::command {
 namespace {
 
 struct Portion {
   sheets::PathAddition addition;
-  double kg = 0;
+  dosing::Wanted wanted;
   bath::Brings brings;
 };
 
@@ -27,31 +26,26 @@ Result<Portion> read_portion(const std::string& text, const Shop& shop) {
   if (last_space == std::string::npos)
     return Problem{Fault::bad_input, where, "the amount is missing", example, ""};
   const std::string amount = text.substr(0, last_space), id = text.substr(last_space + 1);
-  const auto& catalogue = matter::StockCatalogue::built_in();
-  const bath::ShelfItem* item = shop.tank.on_shelf(id);
-  const matter::StockChemical* stock = item ? &item->stock : catalogue.find(id);
-  if (!stock) {
-    const auto close = nearest(id, catalogue.ids());
-    return Problem{Fault::bad_input, where, id + " is not on the shelf or in the catalogue",
-                   "the id of a chemical", close ? "Did you mean " + *close + "?" : ""};
-  }
-  const bath::Incompatible* rule = bath::forbidding_rule(shop.type(), *stock);
-  if (rule && rule->level == bath::Level::stop)
-    return Problem{Fault::refused, where,
-                   id + " must not go into this bath (" + rule->with + "): " + rule->why, "",
-                   "There is no way round this."};
-  auto brings = shop.chemistry.brings(*stock);
-  if (!brings) return brings.problems();
-  const auto volume = units::read_volume(amount, where);
-  if (volume && !stock->liquid)
-    return Problem{Fault::bad_input, where, id + " is a solid, and is not measured in litres",
-                   "a mass, as \"4 kg " + id + "\"", ""};
-  if (volume)
-    return Portion{
-        {id, stock->name, volume->v, "L", amount}, volume->v * stock->kg_per_L, *std::move(brings)};
-  const auto mass = units::read_mass(amount, where);
-  if (!mass) return mass.problems();
-  return Portion{{id, stock->name, mass->v, "kg", amount}, mass->v, *std::move(brings)};
+  auto read = read_wanted(shop, amount, id, where);
+  if (!read) return read.problems();
+  return Portion{{id, read->wanted.stock.name, read->amount, read->unit, amount}, read->wanted, {}};
+}
+
+/// The same additions as any other plan: what is refused is refused here too. What is left are the gases that
+/// stop a step.
+Result<std::vector<std::string>> check(const Shop& shop, const bath::TankState& start,
+                                       const std::vector<Portion>& portions) {
+  std::vector<dosing::Wanted> wanted;
+  for (const Portion& portion : portions) wanted.push_back(portion.wanted);
+  const auto sheet = dosing::check_plan(shop.tank, shop.chemistry, start, wanted);
+  if (!sheet) return sheet.problems();
+  if (!sheet->refused.empty()) return problems_of(sheet->refused, "--add");
+  std::vector<std::string> findings;
+  for (const dosing::Step& step : sheet->plans.front().steps)
+    for (const dosing::Check& check : step.checks)
+      if (check.interlock && !check.ok && check.stops)
+        findings.push_back("with " + step.name + ", " + check.name + ": " + check.detail);
+  return findings;
 }
 
 Result<std::vector<sheets::PathPoint>> walk(const Shop& shop, bath::TankState state,
@@ -68,7 +62,7 @@ Result<std::vector<sheets::PathPoint>> walk(const Shop& shop, bath::TankState st
   if (Outcome ok = stop_here(); !ok) return ok.problems();
   for (std::size_t i = 0; i < portions.size(); ++i) {
     here.addition = i;
-    const double step_kg = portions[i].kg / steps;
+    const double step_kg = portions[i].wanted.kg / steps;
     for (int step = 1; step <= steps; ++step) {
       state = bath::Chemistry::after(std::move(state), portions[i].brings, step_kg);
       here.added = portions[i].addition.amount * step / steps;
@@ -122,11 +116,19 @@ int run(const Context& context, const Options& options) {
   if (!problems.empty()) return fail(context, problems);
   auto start = starting_state(context, *shop, options.readings);
   if (!start) return fail(context, start.problems());
+  const auto gases = check(*shop, start->state, portions);
+  if (!gases) return fail(context, gases.problems());
+  for (Portion& portion : portions) {
+    auto brings = shop->chemistry.brings(portion.wanted.stock);
+    if (!brings) return fail(context, brings.problems());
+    portion.brings = *std::move(brings);
+  }
   const auto points = walk(*shop, start->state, portions, options.steps);
   if (!points) return fail(context, points.problems());
   std::vector<sheets::PathAddition> additions;
   for (const Portion& portion : portions) additions.push_back(portion.addition);
-  const auto findings = sheets::path_findings(shop->tank, shop->type(), additions, *points);
+  auto findings = sheets::path_findings(shop->tank, shop->type(), additions, *points);
+  findings.insert(findings.begin(), gases->begin(), gases->end());
   if (context.json)
     print(json_of(*shop, additions, *points, start->read, findings));
   else

@@ -187,7 +187,7 @@ sheets::Lines page_of(const bath::BathType& type) {
   for (const auto& rule : type.additions) sheets::say(lines, "  " + rule.supply + ": " + rule.how, 2);
   std::vector<std::string> cautions;
   for (const auto& caution : type.cautions) cautions.push_back(caution.text);
-  sheets::cautions(lines, cautions);
+  sheets::append(lines, sheets::cautions(cautions));
   sheets::heading(lines, "Sources");
   for (const auto& source : type.sources) sheets::say(lines, "  " + source.key + ": " + source.citation, 2);
   return lines;

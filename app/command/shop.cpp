@@ -1,5 +1,7 @@
 #include "shop.hpp"
 
+#include <bathwright/bath/at_aims.hpp>
+
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/described/bath_type_file.hpp>
@@ -87,15 +89,7 @@ Result<Shop> open_shop(const Context& context, const std::string& tank_path) {
 }
 
 Result<bath::TankState> state_at_aims(const Shop& shop) {
-  std::map<std::string, double> g_per_L;
-  for (const bath::Aim& aim : shop.tank.aims)
-    if (aim.quantity != "pH") g_per_L[aim.quantity] = aim.aim;
-  const bath::Aim* pH = shop.tank.aim("pH");
-  if (!pH && shop.type().acid_by_pH())
-    return Problem{Fault::bad_input, shop.tank.file + ": target", "has no pH", "an aim for pH",
-                   "Add one, or give readings."};
-  return shop.chemistry.state_from(g_per_L, pH ? std::optional(pH->aim) : std::nullopt,
-                                   shop.tank.working_volume, shop.tank.temperature);
+  return bath::state_at_aims(shop.tank, shop.chemistry);
 }
 
 void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, RunOnReadings run) {

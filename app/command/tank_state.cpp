@@ -1,5 +1,6 @@
 #include "tank_state.hpp"
 
+#include <bathwright/book/from_log.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 #include <bathwright/units/show.hpp>
@@ -19,6 +20,23 @@ Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
     if (quantity && !quantity->salt_view) g_per_L[id] = level;
   }
   return shop.chemistry.state_from(g_per_L, *last.book.pH, last.volume, last.temperature);
+}
+
+/// What the log has of the tank up to these readings.
+Result<std::optional<book::FromLog>> book_before(const Context& context, const Shop& shop,
+                                                 const std::string& readings_path,
+                                                 const std::string& sampled) {
+  std::error_code failure;
+  if (context.log_file.empty() || !std::filesystem::exists(log_path(context), failure))
+    return std::optional<book::FromLog>{};
+  const auto log = open_log_to_read(context);
+  if (!log) return log.problems();
+  const auto calendar = calendar_of(*log);
+  if (!calendar) return calendar.problems();
+  std::ifstream file(readings_path, std::ios::binary);
+  return book::from_log(
+      *log, *calendar, shop.tank, shop.chemistry,
+      {std::string(std::istreambuf_iterator<char>(file), {}), sampled, wall_clock().utc_now()});
 }
 
 /// Whether two documents of `analyse` hold the same figures, whatever is said about them.
@@ -43,7 +61,7 @@ bool same_figures(const Json& a, const Json& b) {
 }  // namespace
 
 Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path) {
-  const auto readings = shopfiles::read_readings(readings_path);
+  auto readings = shopfiles::read_readings(readings_path);
   if (!readings) {
     if (shopfiles::read_tank(readings_path, matter::StockCatalogue::built_in()))
       return Problem{Fault::bad_input, readings_path, "is a tank file", "a file of readings",
@@ -52,15 +70,22 @@ Result<Analysed> analyse(const Context& context, const Shop& shop, const std::st
   }
   const auto last = last_analysis(context, shop.tank.name);
   if (!last) return last.problems();
+  const auto carried = book_before(context, shop, readings_path, readings->sampled);
+  if (!carried) return carried.problems();
   std::optional<analysis::Book> book;
-  if (*last) book = (*last)->book;
+  if (*carried)
+    book = (*carried)->book;
+  else if (*last)
+    book = (*last)->book;
   auto analysis = analysis::evaluate(*readings, shop.tank, shop.chemistry, book);
   if (!analysis) return analysis.problems();
-  Analysed analysed{*std::move(analysis), std::nullopt, {}};
+  Analysed analysed{*std::move(readings), *std::move(analysis), std::nullopt, {}};
   if (*last &&
-      same_figures(analysis_document(shop.tank, shop.type(), analysed.analysis), (*last)->document)) {
+      same_figures(analysis_document(shop.tank, shop.chemistry, analysed.analysis), (*last)->document)) {
     analysed.logged_as = (*last)->seq;
     analysed.changed_since = (*last)->changed_since;
+  } else if (*carried) {
+    analysed.changed_since = (*carried)->after_sample;
   }
   return analysed;
 }

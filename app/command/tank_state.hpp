@@ -18,6 +18,7 @@ Result<StartingState> starting_state(const Context& context, const Shop& shop,
 
 /// Readings worked out, with the last logged analysis as the book.
 struct Analysed {
+  analysis::Readings readings;
   analysis::Analysis analysis;
   std::optional<std::int64_t> logged_as;   ///< where the last logged analysis is of the same readings
   std::vector<std::string> changed_since;  ///< what the log has of the tank after it, a sentence each

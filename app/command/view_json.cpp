@@ -5,6 +5,20 @@
 
 namespace bathwright::command {
 
+namespace {
+
+/// The rows and columns of the component amounts, without the volume's, which are the last.
+std::vector<double> of_the_amounts(const std::vector<double>& covariance, std::size_t components) {
+  std::vector<double> kept;
+  for (std::size_t row = 0; row < components; ++row) {
+    const auto first = covariance.begin() + static_cast<std::ptrdiff_t>(row * (components + 1));
+    kept.insert(kept.end(), first, first + static_cast<std::ptrdiff_t>(components));
+  }
+  return kept;
+}
+
+}  // namespace
+
 Json concentrations(const bath::BathType& type, const bath::TankView& view) {
   Json object = Json::object();
   for (std::size_t i = 0; i < type.quantities.size(); ++i)
@@ -44,24 +58,58 @@ Json level_list(const std::vector<sheets::Judged>& judged) {
   return list;
 }
 
-Json analysis_document(const bath::Tank& tank, const bath::BathType& type,
+namespace {
+
+Json json_of(const std::vector<analysis::LevelFound>& levels) {
+  Json list = Json::array();
+  for (const auto& level : levels)
+    list.push_back({{"quantity", level.quantity},
+                    {"value", level.value.v},
+                    {"unit", "g/L"},
+                    {"standard_uncertainty", level.standard_uncertainty.v},
+                    {"from", analysis::name(level.from)},
+                    {"how", level.how},
+                    {"interferences", level.interferences}});
+  return list;
+}
+
+Json json_of(const analysis::Misfit& misfit) {
+  Json residuals = Json::array(), explanations = Json::array();
+  const auto entry = [](const std::optional<std::int64_t>& seq) { return seq ? Json(*seq) : Json(nullptr); };
+  for (const auto& residual : misfit.residuals)
+    residuals.push_back(
+        {{"what", residual.what}, {"entry", entry(residual.entry)}, {"studentised", residual.studentised}});
+  for (const auto& explanation : misfit.explanations)
+    explanations.push_back({{"culprit", explanation.culprit},
+                            {"words", explanation.words},
+                            {"entry", entry(explanation.entry)},
+                            {"chi_square_drop", explanation.chi_square_drop},
+                            {"log_evidence", explanation.log_evidence}});
+  return {{"chi_square", misfit.chi_square},        {"degrees_of_freedom", misfit.degrees_of_freedom},
+          {"probability", misfit.probability},      {"alarm", misfit.alarm},
+          {"one_is_clear", misfit.one_is_clear},    {"residuals", std::move(residuals)},
+          {"explanations", std::move(explanations)}};
+}
+
+}  // namespace
+
+Json analysis_document(const bath::Tank& tank, const bath::Chemistry& chemistry,
                        const analysis::Analysis& analysis) {
   Json doc = document(analysis.notes);
   doc["tank"] = tank.name;
+  doc["sampled"] = analysis.sampled;
+  if (!tank.limits.revision.empty())
+    doc["limits"] = {
+        {"revision", tank.limits.revision}, {"from", tank.limits.from}, {"owner", tank.limits.owner}};
   doc["volume_L"] = analysis.volume.v;
   doc["volume_from"] = analysis.volume_from;
   doc["temperature_C"] = analysis.temperature.v;
   doc["pH"] = analysis.pH;
-  doc["results"] = Json::array();
-  for (const auto& level : analysis.results)
-    doc["results"].push_back({{"quantity", level.quantity},
-                              {"value", level.value.v},
-                              {"unit", "g/L"},
-                              {"standard_uncertainty", level.standard_uncertainty.v},
-                              {"from", analysis::name(level.from)},
-                              {"how", level.how},
-                              {"interferences", level.interferences}});
-  doc["reconciled"] = doc["results"];  // the levels the state is made of: nothing moves them in this version
+  doc["results"] = json_of(analysis.results);
+  doc["book"] = json_of(analysis.expected);
+  doc["reconciled"] = json_of(analysis.reconciled);
+  doc["volume_reconciled_L"] = analysis.volume_reconciled.v;
+  doc["misfit"] = json_of(analysis.misfit);
   doc["suspects"] = Json::array();
   for (const auto& suspect : analysis.suspects)
     doc["suspects"].push_back(
@@ -77,7 +125,12 @@ Json analysis_document(const bath::Tank& tank, const bath::BathType& type,
                                  {"bias_mL", bias.mL},
                                  {"bias_percent", 100 * bias.share},
                                  {"range_mL", {bias.from_mL, bias.to_mL}}});
-  doc["levels"] = level_list(sheets::judge(tank, type, analysis));
+  doc["levels"] = level_list(sheets::judge(tank, chemistry.type(), analysis));
+  doc["tank_state"] = {
+      {"components", chemistry.components()},
+      {"component_mol", analysis.state.component_mol},
+      {"water_kg", analysis.state.water_kg},
+      {"covariance_mol2", of_the_amounts(analysis.covariance, chemistry.components().size())}};
   return doc;
 }
 

@@ -20,8 +20,9 @@ namespace bathwright::command {
 /// [{quantity, value, unit, low, aim, high, state}]
 [[nodiscard]] Json level_list(const std::vector<sheets::Judged>& judged);
 
-/// The document of `analyse`, which is also what the log keeps of an analysis.
-[[nodiscard]] Json analysis_document(const bath::Tank& tank, const bath::BathType& type,
+/// The document of `analyse`, which is also what the log keeps of an analysis. `tank_state` is what the book
+/// starts from: amounts and their covariance, row after row, in the order of `components`.
+[[nodiscard]] Json analysis_document(const bath::Tank& tank, const bath::Chemistry& chemistry,
                                      const analysis::Analysis& analysis);
 
 [[nodiscard]] bool all_in_window(const std::vector<sheets::Judged>& judged);

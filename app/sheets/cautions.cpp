@@ -15,11 +15,12 @@ std::string_view without_deferral(std::string_view caution) {
 
 }  // namespace
 
-void cautions(Lines& lines, const std::vector<std::string>& all) {
-  if (all.empty()) return;
-  heading(lines, "Cautions");
+Section cautions(const std::vector<std::string>& all) {
+  Section section{"Cautions", {}};
   for (const std::string& caution : all)
-    if (const auto text = without_deferral(caution); !text.empty()) say(lines, "  " + std::string(text), 2);
+    if (const auto text = without_deferral(caution); !text.empty())
+      section.blocks.push_back(Paragraph{std::string(text)});
+  return section;
 }
 
 }  // namespace bathwright::sheets

@@ -1,3 +1,4 @@
+#include <algorithm>
 #include <bathwright/sheets/doubts.hpp>
 #include <bathwright/sheets/names.hpp>
 
@@ -36,11 +37,25 @@ std::string in_few_words(std::string_view doubt) {
   return pretty_names(words.substr(0, colon)) + std::string(words.substr(colon));
 }
 
-void doubts(Lines& lines, const std::vector<std::string>& all) {
-  if (all.empty()) return;
-  heading(lines, "What is doubtful");
-  for (const std::string& doubt : all) say(lines, "  " + in_few_words(doubt), 2);
-  say(lines, "  In full, with sources: --json, and bathwright sources ION.");
+Section doubts(const std::vector<std::string>& all) {
+  std::vector<std::pair<std::string, std::string>> reasons;  // and what is doubted for it
+  for (const std::string& doubt : all) {
+    const std::string words = in_few_words(doubt);
+    const std::size_t colon = words.find(": ");
+    const std::string reason = colon == std::string::npos ? words : words.substr(colon + 2);
+    const std::string what = colon == std::string::npos ? "" : words.substr(0, colon);
+    const auto known = std::ranges::find(reasons, reason, &std::pair<std::string, std::string>::first);
+    if (known == reasons.end())
+      reasons.emplace_back(reason, what);
+    else if (!what.empty())
+      known->second += ", " + what;
+  }
+  Section section{"What is doubtful", {}};
+  for (const auto& [reason, what] : reasons)
+    section.blocks.push_back(Paragraph{what.empty() ? reason : what + ": " + reason});
+  if (!reasons.empty())
+    section.blocks.push_back(Paragraph{"In full, with sources: --json, and bathwright sources ION."});
+  return section;
 }
 
 }  // namespace bathwright::sheets

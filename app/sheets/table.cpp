@@ -4,7 +4,7 @@
 namespace bathwright::sheets {
 namespace {
 
-constexpr std::size_t gap = 2;
+constexpr std::size_t gap = 2, least_room = 12;
 
 std::size_t before_mark(const std::string& number) { return std::min(number.find('.'), number.size()); }
 
@@ -43,6 +43,10 @@ Lines Table::lines() const {
       (c + 1 < columns_.size() ? before : last) += number ? pad + cell : cell + pad;
     }
     last.erase(last.find_last_not_of(' ') + 1);
+    if (indent_of_last + least_room > width) {  // nothing is left to wrap in: the row is wider than the page
+      out.push_back((before + last).substr(0, (before + last).find_last_not_of(' ') + 1));
+      return;
+    }
     Lines wrapped;
     say(wrapped, std::string(indent_of_last, ' ') + last);
     wrapped.front().replace(0, indent_of_last, before);

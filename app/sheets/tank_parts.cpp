@@ -17,11 +17,6 @@ std::string room(bool covers, double log10_room, double kg, const std::optional<
          (u_kg ? " ± " + units::significant(*u_kg, 1) : "") + " kg";
 }
 
-/// Three figures of a window's upper end: 200.0, 0.100.
-int decimals_of(double high) {
-  return high > 0 ? std::clamp(2 - static_cast<int>(std::floor(std::log10(high))), 1, 5) : 1;
-}
-
 void add_if_over(std::vector<std::string>& out, const bath::Headroom& h, units::Celsius t, bool covers,
                  double log10_room, double kg) {
   if (!covers || !(log10_room < 0)) return;
@@ -39,6 +34,12 @@ void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Ce
         units::show(units::Litres{volume_L}, "L") + ", " + units::show(temperature, "degC", 3));
 }
 
+int decimals_of(const Judged& judged) {
+  if (judged.unit.empty()) return 2;
+  const double high = judged.aim->high;
+  return high > 0 ? std::clamp(2 - static_cast<int>(std::floor(std::log10(high))), 1, 5) : 1;
+}
+
 Lines levels(const std::vector<Judged>& judged) {
   Table table({{"g/L, or pH"},
                {"found", Align::number},
@@ -47,7 +48,7 @@ Lines levels(const std::vector<Judged>& judged) {
                {"high", Align::number},
                {"state"}});
   for (const Judged& j : judged) {
-    const int decimals = j.unit.empty() ? 2 : decimals_of(j.aim->high);
+    const int decimals = decimals_of(j);
     table.add({j.label, fixed(j.found, decimals), fixed(j.aim->low, decimals), fixed(j.aim->aim, decimals),
                fixed(j.aim->high, decimals), std::string(words(j.standing))});
   }

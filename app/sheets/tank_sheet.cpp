@@ -82,8 +82,8 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
   std::vector<std::string> texts;
   for (const auto& caution : type.cautions)
     if (of_the_tank(caution)) texts.push_back(caution.text);
-  cautions(lines, texts);
-  doubts(lines, view.warnings);
+  append(lines, cautions(texts));
+  append(lines, doubts(view.warnings));
   lines.emplace_back();
   const auto over = crystallising(tank, view.headroom);
   for (const std::string& solid : over) say(lines, solid + ".", 2);

@@ -21,7 +21,8 @@ std::size_t columns(std::string_view utf8) {
 }
 
 void say(Lines& lines, std::string_view text, std::size_t hang) {
-  const std::size_t own = std::min(text.find_first_not_of(' '), text.size());
+  constexpr std::size_t deepest = width / 2;  // some room must be left for words
+  const std::size_t own = std::min(std::min(text.find_first_not_of(' '), text.size()), width - 1);
   std::string line(own, ' ');
   bool empty = true;
   text.remove_prefix(own);
@@ -39,7 +40,7 @@ void say(Lines& lines, std::string_view text, std::size_t hang) {
         if (word.empty()) break;
       }
       lines.push_back(std::move(line));
-      line = std::string(own + hang, ' ');
+      line = std::string(own + hang < width ? own + hang : deepest, ' ');
       empty = true;
     }
   }

@@ -10,9 +10,10 @@
 namespace bathwright::logbook {
 
 const std::vector<std::string>& entry_kind_names() {
-  static const std::vector<std::string> names{
-      "analysis", "plan",       "slip",        "addition",  "level",  "ampere-hours", "dump",
-      "note",     "correction", "slip-closed", "hand-over", "person", "setting",      "failed-pin"};
+  static const std::vector<std::string> names{"analysis",   "plan",          "slip",        "addition",
+                                              "level",      "ampere-hours",  "dump",        "note",
+                                              "correction", "slip-approved", "slip-closed", "hand-over",
+                                              "person",     "setting",       "failed-pin"};
   return names;
 }
 

@@ -81,8 +81,10 @@ void check_about(const NewEntry& entry, Problems& problems) {
         problems.push_back(
             bad("about", "a correction that names no entry", "the number of the entry it corrects"));
       break;
+    case EntryKind::slip_approved:
     case EntryKind::slip_closed:
-      if (!entry.about) problems.push_back(bad("about", "no slip named", "the number of the slip it closes"));
+      if (!entry.about)
+        problems.push_back(bad("about", "no slip named", "the number of the slip it approves or closes"));
       break;
     case EntryKind::addition:
       break;

@@ -31,6 +31,9 @@ Outcome check_answered(const NewEntry& entry, const std::optional<Entry>& answer
   if (answered->kind != EntryKind::slip)
     return problem(fmt::format("entry {} is no slip but {}", answered->seq, name(answered->kind)), "a slip",
                    "check the number");
+  if (entry.kind == EntryKind::slip_approved && entry.by == answered->by)
+    return Problem{Fault::refused, "slip-approved", fmt::format("{} prepared this slip", entry.by),
+                   "another person", "let somebody else read it and approve it"};
   for (const Entry& slip : open_slips)
     if (slip.seq == answered->seq) return Done{};
   return problem(fmt::format("slip {} is closed", answered->seq), "an open slip",

@@ -23,6 +23,7 @@ bool may_write(Role role, EntryKind kind) {
   switch (kind) {
     case EntryKind::setting:
     case EntryKind::dump:
+    case EntryKind::slip_approved:
       return role == Role::chemist;
     case EntryKind::failed_pin:
       return false;  // only the log itself

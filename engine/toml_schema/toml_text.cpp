@@ -45,10 +45,14 @@ std::optional<Problem> unfit(std::string_view name, std::string_view text) {
   return std::nullopt;
 }
 
+std::string iso_8601(const toml::date& date) {
+  return fmt::format("{:04}-{:02}-{:02}", date.year, date.month, date.day);
+}
+
 // Two digits a field: "2026-03-02T05:40:00".
 std::string iso_8601(const toml::date_time& moment) {
-  return fmt::format("{:04}-{:02}-{:02}T{:02}:{:02}:{:02}", moment.date.year, moment.date.month,
-                     moment.date.day, moment.time.hour, moment.time.minute, moment.time.second);
+  return fmt::format("{}T{:02}:{:02}:{:02}", iso_8601(moment.date), moment.time.hour, moment.time.minute,
+                     moment.time.second);
 }
 
 class Converter {
@@ -103,6 +107,7 @@ class Converter {
       node.kind = Node::Kind::moment;
       const auto* moment = from.as_date_time();
       if (moment && !moment->get().offset) node.text = iso_8601(moment->get());
+      if (const auto* date = from.as_date()) node.text = iso_8601(date->get());
     }
   }
 

@@ -17,9 +17,10 @@ TEST_CASE("a doubt is shortened to its pair and what was done", "[unit][sheets]"
 
 TEST_CASE("a caution stands without its own deferral", "[unit][sheets]") {
   Lines lines;
-  cautions(lines, {"Make no dust. The supplier's SDS, local codes and licensed practice decide.",
+  append(lines,
+         cautions({"Make no dust. The supplier's SDS, local codes and licensed practice decide.",
                    "The supplier's safety data sheet, local codes and licensed practice decide; so be it.",
-                   "The supplier's drum is blue."});
+                   "The supplier's drum is blue."}));
   REQUIRE(lines.size() == 4);
   CHECK(lines[2] == "  Make no dust.");
   CHECK(lines[3] == "  The supplier's drum is blue.");

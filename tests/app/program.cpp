@@ -10,8 +10,6 @@
 #include <sstream>
 
 namespace app_test {
-namespace {
-
 namespace fs = std::filesystem;
 
 std::string content_of(const fs::path& file) {
@@ -19,8 +17,6 @@ std::string content_of(const fs::path& file) {
   content << std::ifstream(file, std::ios::binary).rdbuf();
   return content.str();
 }
-
-}  // namespace
 
 Bench::Bench() {
   static int count = 0;

@@ -40,6 +40,8 @@ class Bench {
 inline const std::string tank = PROJECT_DIR "/baths/n-07.toml";
 inline const std::string readings = PROJECT_DIR "/baths/readings/n-07-morning.toml";
 
+[[nodiscard]] std::string content_of(const std::filesystem::path& file);
+
 /// Columns of the widest line, counted in code points.
 [[nodiscard]] std::size_t widest_line(const std::string& text);
 

@@ -60,8 +60,8 @@ Fields fields_of(StatedBath& bath) {
   }
   for (bw_addition_rule& row : bath.additions) {
     texts.insert(texts.end(), {&row.supply, &row.how});
-    numbers.insert(numbers.end(), {&row.largest_rise_g_per_L, &row.largest_pH_step, &row.wait_h});
-    codes.insert(codes.end(), {&row.order, &row.source});
+    numbers.insert(numbers.end(), {&row.largest_rise_g_per_L, &row.largest_pH_step, &row.wait_h, &row.thin_to_parts});
+    codes.insert(codes.end(), {&row.order, &row.source, &row.half_then_analyse});
   }
   for (bw_caution& row : bath.cautions) {
     texts.insert(texts.end(), {&row.subject, &row.text});

@@ -1,4 +1,4 @@
-// bathwright log add | correct | close: entries by hand.
+// bathwright log add | correct | approve | close: entries by hand.
 #include <bathwright/sheets/text.hpp>
 
 #include "verbs.hpp"
@@ -86,6 +86,12 @@ int correct(const Context& context, std::int64_t seq, const std::string& reason,
   return answer(context, logbook::EntryKind::correction, seq, body);
 }
 
+int approve(const Context& context, std::int64_t seq, const std::string& note) {
+  Json body = Json::object();
+  if (!note.empty()) body["note"] = note;
+  return answer(context, logbook::EntryKind::slip_approved, seq, body);
+}
+
 int close(const Context& context, std::int64_t seq, bool cancelled, const std::string& reason) {
   Json body{{"outcome", cancelled ? "cancelled" : "done"}};
   if (!reason.empty()) body["reason"] = reason;
@@ -135,6 +141,17 @@ void add_writing(CLI::App& log, Context& context, Action& action) {
   add_signature(*correct_verb, context);
   correct_verb->callback([&context, &action, wrong, reason, right] {
     action = [&context, wrong, reason, right] { return correct(context, *wrong, *reason, *right); };
+  });
+
+  auto* approve_verb =
+      log.add_subcommand("approve", "a second person has read a slip and stands for it")->fallthrough();
+  auto read = std::make_shared<std::int64_t>(0);
+  auto remark = std::make_shared<std::string>();
+  approve_verb->add_option("NUMBER", *read, "the slip")->required();
+  approve_verb->add_option("--note", *remark, "what is to be heeded");
+  add_signature(*approve_verb, context);
+  approve_verb->callback([&context, &action, read, remark] {
+    action = [&context, read, remark] { return approve(context, *read, *remark); };
   });
 
   auto* close_verb = log.add_subcommand("close", "a slip was carried out, or is cancelled")->fallthrough();

@@ -171,6 +171,24 @@ TEST_CASE("a slip blocks the next of its tank until it is closed", "[failure][lo
   CHECK(must(write(of_kind(slip))).seq == 6);
 }
 
+TEST_CASE("a slip is approved by a chemist who did not prepare it", "[failure][logbook]") {
+  Shop shop;
+  const Credential second{"R. Second", "662607"};
+  must(shop.log.admit(second.name, Role::chemist, second.pin, by(chemist)));
+  using enum EntryKind;
+  const std::int64_t seq = must(shop.log.append(of_kind(slip), by(chemist))).seq;
+  CHECK(shop.log.append(of_kind(slip_approved), by(second)).problems()[0].what == "no slip named");
+  CHECK(refusal(shop.log.append(of_kind(slip_approved, seq), by(chemist))) ==
+        "A. Chemist prepared this slip");
+  CHECK_THAT(refusal(shop.log.append(of_kind(slip_approved, seq), by(hand))),
+             Catch::Contains("may not write this"));
+  CHECK(must(shop.log.append(of_kind(slip_approved, seq), by(second))).about == seq);
+  must(shop.log.append(of_kind(slip_closed, seq), by(hand)));
+  CHECK(shop.log.append(of_kind(slip_approved, seq), by(second)).problems()[0].what ==
+        "slip " + std::to_string(seq) + " is closed");
+  CHECK(shop.log.verify().ok);
+}
+
 TEST_CASE("another copy's entries carry a log on, or none does", "[failure][logbook]") {
   const TempFolder folder;
   const HeldClock clock;

@@ -96,6 +96,15 @@ TEST_CASE("an aim is in g/L of its quantity whatever unit it was written in", "[
   CHECK(tank.temperature.v == Approx(55).margin(1e-9).epsilon(0));
 }
 
+TEST_CASE("the uncertainty of an assay is stated as the assay is", "[unit][shopfiles]") {
+  const auto u = [](const std::string& keys) {
+    return only_item("nickel-sulfate = { " + keys + R"(, price = 5, unit = "kg" })").u_assay_rel;
+  };
+  CHECK(u(R"(assay = "99 %", assay_uncertainty = "0.3 %")").value() == Approx(0.3 / 99));
+  CHECK(u(R"(assay = "22.2 %w/w Ni", assay_uncertainty = "0.1 %w/w Ni")").value() == Approx(0.1 / 22.2));
+  CHECK_FALSE(u(R"(assay = "99 %")"));
+}
+
 TEST_CASE("an assay may be the content of an element", "[unit][shopfiles]") {
   // D1's molar masses: Ni 58.693, NiSO4.6H2O 262.839 g/mol: 22.2 % Ni is 0.222 * 262.839 / 58.693 = 0.99416.
   const ShelfItem by_metal =
@@ -113,7 +122,11 @@ TEST_CASE("an assay may be the content of an element", "[unit][shopfiles]") {
 TEST_CASE("a shelf entry overrides what the catalogue says of the chemical", "[unit][shopfiles]") {
   const ShelfItem bag = only_item(R"(nickel-sulfate = { formula = "NiSO4.7H2O", price = 5, unit = "kg" })");
   CHECK(bag.stock.formula == "NiSO4.7H2O");
-  CHECK(bag.stock.name == stock().find("nickel-sulfate")->name);
+  CHECK(bag.stock.name == "nickel(II) sulfate heptahydrate");
+  CHECK(only_item(R"(nickel-sulfate = { formula = "NiSO4", price = 5, unit = "kg" })").stock.name ==
+        "nickel(II) sulfate, anhydrous");
+  CHECK(only_item(R"(nickel-sulfate = { formula = "NiSO4.7H2O", name = "own", price = 5, unit = "kg" })")
+            .stock.name == "own");
   CHECK(bag.stock.assay == stock().find("nickel-sulfate")->assay);
   const ShelfItem drum = only_item(
       R"(brightener-a = { formula = "C7H5NO3S", assay = "20 %", density = "1,05 kg/L", price = 3, unit = "L", )"
@@ -129,4 +142,59 @@ TEST_CASE("a price per pound or gallon becomes one per kg or L", "[unit][shopfil
         Approx(1 / 0.45359237).epsilon(1e-12));
   CHECK(only_item(R"(water = { price = 1, unit = "US gal" })").price ==
         Approx(1 / 3.785411784).epsilon(1e-12));
+}
+
+TEST_CASE("how a tank is dosed is read, and usual where nothing is said", "[unit][shopfiles]") {
+  const std::string rest = "pH = { aim = 4, low = 3, high = 5 }";
+  const bath::DosingHabits usual = tank_with(rest, "").dosing;
+  CHECK(usual.fill == bath::DosingHabits::Fill::to_mark);
+  CHECK(usual.dead_band);
+  CHECK(usual.dead_band_share == 0.02);
+  CHECK_FALSE(usual.whole_packages);
+  const bath::DosingHabits said =
+      tank_with(rest,
+                "[dosing]\nfill = \"as is\"\nwhole_packages = true\ndead_band = \"1.5 %\"\n"
+                "dead_band_pH = 0.1\nwaste_price = 0.12")
+          .dosing;
+  CHECK(said.fill == bath::DosingHabits::Fill::as_is);
+  CHECK(said.whole_packages);
+  CHECK(said.dead_band_share == Approx(0.015).epsilon(1e-12));
+  CHECK(said.dead_band_pH == 0.1);
+  CHECK(said.waste_price_per_L == 0.12);
+  CHECK_FALSE(tank_with(rest, "[dosing]\ndead_band = \"off\"").dosing.dead_band);
+}
+
+TEST_CASE("a lot has its label, its last day and what its certificate finds", "[unit][shopfiles]") {
+  const ShelfItem lot = only_item(
+      R"(boric-acid = { price = 1, unit = "kg", grade = "technical", lot = "24-0815", expires = 2027-06-30, )"
+      R"(contains = { "SO4^2-" = "0,05 %" } })");
+  CHECK(lot.grade == "technical");
+  CHECK(lot.lot == "24-0815");
+  CHECK(lot.expires == "2027-06-30");
+  CHECK_FALSE(lot.expired_on("2027-06-30T22:00:00"));
+  CHECK(lot.expired_on("2027-07-01"));
+  CHECK_FALSE(lot.expired_on(""));
+  REQUIRE(lot.stock.contains.size() == 1);
+  CHECK(lot.stock.contains[0].formula == "SO4^2-");
+  CHECK(lot.stock.contains[0].fraction == Approx(0.0005).epsilon(1e-12));
+  CHECK(only_item(R"(boric-acid = { price = 1, unit = "kg", expires = "2027-06-30" })").expires ==
+        "2027-06-30");
+}
+
+TEST_CASE("the limits of a tank have their revision", "[unit][shopfiles]") {
+  const auto tank = shopfiles::read_tank_text("t.toml", R"(bath_type = "b"
+name = "t"
+line = "line 2"
+vessel = { working_volume = "100 L", freeboard = "5 L" }
+operating = { temperature = "55 degC", idle_temperature = "18 degC" }
+target = { pH = { aim = 4, low = 3, high = 5 } }
+limits = { revision = "C", from = 2026-01-15, owner = "process chemist", source = "supplier sheet" }
+)",
+                                              stock());
+  REQUIRE(tank);
+  CHECK(tank->line == "line 2");
+  CHECK(tank->limits.revision == "C");
+  CHECK(tank->limits.from == "2026-01-15");
+  CHECK(tank->limits.owner == "process chemist");
+  CHECK(tank->limits.source == "supplier sheet");
 }

@@ -1,7 +1,7 @@
 // Cautions on a page: what they all defer to is said once.
 #pragma once
 
-#include <bathwright/sheets/text.hpp>
+#include <bathwright/sheets/page.hpp>
 
 namespace bathwright::sheets {
 
@@ -10,7 +10,7 @@ inline constexpr std::string_view deferral =
     "The supplier's safety data sheet, local codes and licensed practice decide; this page does not replace "
     "them.";
 
-/// Appends a section of them, each without its own words of deferral; nothing where there is none.
-void cautions(Lines& lines, const std::vector<std::string>& all);
+/// Each without its own words of deferral.
+[[nodiscard]] Section cautions(const std::vector<std::string>& all);
 
 }  // namespace bathwright::sheets

@@ -1,7 +1,7 @@
 // What stands against an answer, in few words: on a sheet that somebody signs.
 #pragma once
 
-#include <bathwright/sheets/text.hpp>
+#include <bathwright/sheets/page.hpp>
 
 namespace bathwright::sheets {
 
@@ -9,7 +9,7 @@ namespace bathwright::sheets {
 /// of ...)" as "Ni²⁺ - Cl⁻: analogy, weakly tested".
 [[nodiscard]] std::string in_few_words(std::string_view doubt);
 
-/// Appends a section of them, and where the full words are; nothing where there is no doubt.
-void doubts(Lines& lines, const std::vector<std::string>& all);
+/// What is doubted for one reason stands together; and where the full words are.
+[[nodiscard]] Section doubts(const std::vector<std::string>& all);
 
 }  // namespace bathwright::sheets

@@ -24,6 +24,8 @@ class Table {
     rows_.push_back(std::move(cells));
   }
   [[nodiscard]] bool empty() const { return rows_.empty(); }
+  [[nodiscard]] const std::vector<Column>& heads() const { return columns_; }
+  [[nodiscard]] const std::vector<std::vector<std::string>>& rows() const { return rows_; }
 
   /// Indented by two; wrapped in the last column where the page is too narrow.
   [[nodiscard]] Lines lines() const;

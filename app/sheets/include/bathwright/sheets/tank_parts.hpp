@@ -10,6 +10,9 @@ namespace bathwright::sheets {
 /// The tank and its shop left; volume and temperature right.
 void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Celsius temperature);
 
+/// To which a level is shown: three figures of its window's upper end, 200.0, 0.100; pH with two decimals.
+[[nodiscard]] int decimals_of(const Judged& judged);
+
 [[nodiscard]] Lines levels(const std::vector<Judged>& judged);
 
 /// Room of each watched solid at the working and the idle temperature.

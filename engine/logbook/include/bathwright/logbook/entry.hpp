@@ -24,11 +24,12 @@ enum class EntryKind {
   dump,
   note,
   correction,
-  slip_closed,  ///< a slip was carried out or cancelled
-  hand_over,    ///< one shift told the next
-  person,       ///< who may sign, and with which key
-  setting,      ///< a rule of the log: second signatures, shifts
-  failed_pin    ///< somebody gave a wrong PIN
+  slip_approved,  ///< a second person stands for a slip
+  slip_closed,    ///< a slip was carried out or cancelled
+  hand_over,      ///< one shift told the next
+  person,         ///< who may sign, and with which key
+  setting,        ///< a rule of the log: second signatures, shifts
+  failed_pin      ///< somebody gave a wrong PIN
 };
 
 /// The name of a kind in files and on the command line, such as "ampere-hours".

@@ -14,7 +14,7 @@ struct Node {
   Kind kind = Kind::table;
   int line = 1;             ///< 1-based
   std::string key;          ///< under which it stands in a table; empty in a list and for the whole file
-  std::string text;         ///< of text; of a local date and time in ISO 8601, empty for other moments
+  std::string text;         ///< of text; of a local date, with or without a time, in ISO 8601; empty for other moments
   double number = 0;        ///< of a number
   bool truth = false;       ///< of true or false
   std::vector<Node> items;  ///< of a list or table, in the order of the file

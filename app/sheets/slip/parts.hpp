@@ -1,0 +1,38 @@
+// The sections of the addition slip, in the order they stand on it. Private to sheets.
+#pragma once
+
+#include <bathwright/sheets/addition_sheet.hpp>
+
+namespace bathwright::sheets::slip {
+
+/// Where, by which limits, of which sample, how it was analysed.
+[[nodiscard]] Section origin(const AdditionSlip& slip);
+/// What keeps it from being carried out; nothing where nothing does.
+[[nodiscard]] Section stopping(const AdditionSlip& slip);
+/// Each aim: its limits, what was found, what is expected at the end; earlier results below.
+[[nodiscard]] Section levels(const AdditionSlip& slip);
+/// What to weigh out of which lot.
+[[nodiscard]] Section weighing(const AdditionSlip& slip, const dosing::Plan& plan);
+/// The steps in order, and what the tank shows after each.
+[[nodiscard]] Section order(const AdditionSlip& slip, const dosing::Plan& plan);
+[[nodiscard]] Section expected_after_each(const AdditionSlip& slip, const dosing::Plan& plan);
+/// What the checks of the steps found that stops nothing.
+[[nodiscard]] Section watch(const dosing::Plan& plan);
+/// What the shelf can take out as a solid, of a level that ends too high.
+[[nodiscard]] Section bringing_down(const dosing::Plan& plan);
+/// The chance of ending inside every window, and of everything staying dissolved.
+[[nodiscard]] Section promise(const AdditionSlip& slip, const dosing::Plan& plan);
+/// Aims that are not reached, what is left alone on purpose, and the limits in each other's way.
+[[nodiscard]] Section not_at_its_aim(const dosing::Plan& plan);
+[[nodiscard]] Section other_plans(const AdditionSlip& slip);
+[[nodiscard]] Section refused(const AdditionSlip& slip);
+/// What comes next, and the lines to sign on.
+[[nodiscard]] Section signing(const AdditionSlip& slip);
+
+/// An amount as one would weigh or measure it: grams below a kilogram, millilitres below a litre.
+[[nodiscard]] std::string measured(double amount, const std::string& unit);
+/// A figure of a rule or label, as it was written: 25, 99.5.
+[[nodiscard]] std::string plain(double value);
+[[nodiscard]] std::string money(double cost, const bath::Tank& tank);
+
+}  // namespace bathwright::sheets::slip
