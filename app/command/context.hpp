@@ -52,6 +52,7 @@ void add_analyse(CLI::App& program, Context& context, Action& action);
 void add_dose(CLI::App& program, Context& context, Action& action);
 void add_fit(CLI::App& program, Context& context, Action& action);
 void add_forecast(CLI::App& program, Context& context, Action& action);
+void add_learn(CLI::App& program, Context& context, Action& action);
 void add_log(CLI::App& program, Context& context, Action& action);
 void add_path(CLI::App& program, Context& context, Action& action);
 void add_plant(CLI::App& program, Context& context, Action& action);

@@ -56,6 +56,7 @@ int main(int argc, char** argv) {
   add_tank(program, context, action);
   add_path(program, context, action);
   add_forecast(program, context, action);
+  add_learn(program, context, action);
   add_log(program, context, action);
   add_plant(program, context, action);
   add_solution(program, context, action);

@@ -43,8 +43,10 @@ Lines Table::lines() const {
       (c + 1 < columns_.size() ? before : last) += number ? pad + cell : cell + pad;
     }
     last.erase(last.find_last_not_of(' ') + 1);
-    if (indent_of_last + least_room > width) {  // nothing is left to wrap in: the row is wider than the page
-      out.push_back((before + last).substr(0, (before + last).find_last_not_of(' ') + 1));
+    if (indent_of_last + least_room > width) {  // no room is left beside the others: below them
+      before.erase(before.find_last_not_of(' ') + 1);
+      out.push_back(before);
+      if (!last.empty()) say(out, std::string(3 * gap, ' ') + last);
       return;
     }
     Lines wrapped;
