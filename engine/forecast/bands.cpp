@@ -1,8 +1,8 @@
 #include <algorithm>
 #include <atomic>
+#include <bathwright/base/normal.hpp>
 #include <cmath>
 #include <mutex>
-#include <random>
 #include <thread>
 
 #include "block.hpp"
@@ -12,29 +12,16 @@
 namespace bathwright::forecast {
 namespace {
 
-/// Normal deviates that are the same on every platform: std::normal_distribution is not.
-class Normal {
- public:
-  explicit Normal(std::uint64_t seed) : random_(seed) {}
-  double operator()() {
-    const double u = uniform(), v = uniform();
-    return std::sqrt(-2 * std::log(u)) * std::cos(2 * 3.14159265358979323846 * v);  // Box and Muller, 1958
-  }
-  /// A factor of mean 1 and relative standard deviation u, lognormal.
-  double factor(double u) {
-    const double s2 = std::log1p(u * u), deviate = (*this)();
-    return std::exp(std::sqrt(s2) * deviate - s2 / 2);
-  }
-
- private:
-  double uniform() { return (static_cast<double>(random_() >> 11) + 0.5) * 0x1p-53; }
-  std::mt19937_64 random_;
-};
+/// A factor of mean 1 and relative standard deviation u, lognormal.
+double factor(Normal& normal, double u) {
+  const double s2 = std::log1p(u * u), deviate = normal();
+  return std::exp(std::sqrt(s2) * deviate - s2 / 2);
+}
 
 Draw drawn(const Prepared& p, const std::vector<Input>& inputs, std::uint64_t seed) {
   Normal normal(seed);
   Draw draw = as_it_stands(p);
-  for (const Input& input : inputs) input.in(draw) = normal.factor(input.u_rel);
+  for (const Input& input : inputs) input.in(draw) = factor(normal, input.u_rel);
   return draw;
 }
 
