@@ -1,9 +1,11 @@
 // bathwright analyse TANK READINGS: readings to concentrations with their uncertainty.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/analysis_sheet.hpp>
 
 #include "context.hpp"
-#include "tank_state.hpp"
-#include "view_json.hpp"
+#include "shared_options.hpp"
+#include "work/documents.hpp"
+#include "work/tank_state.hpp"
 
 namespace bathwright::command {
 namespace {

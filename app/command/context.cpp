@@ -24,30 +24,10 @@ std::string_view word(Fault fault) {
   return "";
 }
 
-void unsign_zeros(Json& value) {
-  if (value.is_structured())
-    for (Json& element : value) unsign_zeros(element);
-  else if (value.is_number_float() && value.get<double>() == 0)
-    value = 0.0;
-}
-
 }  // namespace
-
-std::string program_and_version() { return std::string("bathwright ") + BATHWRIGHT_VERSION; }
-
-Json document(const std::vector<std::string>& warnings) {
-  return {{"program", "bathwright"}, {"version", BATHWRIGHT_VERSION}, {"warnings", warnings}};
-}
-
-Json or_null(const std::optional<double>& value) { return value ? Json(*value) : Json(); }
 
 void print(const sheets::Lines& lines) {
   for (const std::string& line : lines) std::printf("%s\n", line.c_str());
-}
-
-std::string text_of(Json document, int indent) {
-  unsign_zeros(document);
-  return document.dump(indent, ' ', false, Json::error_handler_t::replace);
 }
 
 void print(const Json& document) {

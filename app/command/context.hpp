@@ -1,16 +1,19 @@
 // What every verb needs: the options that stand for all of them, how an answer is printed, how a run ends.
 #pragma once
 
-#include <CLI/CLI.hpp>
-#include <bathwright/base/result.hpp>
 #include <bathwright/sheets/text.hpp>
 #include <functional>
-#include <nlohmann/json.hpp>
-#include <optional>
+
+#include "work/documents.hpp"
+#include "work/session.hpp"
+
+namespace CLI {
+class App;
+}
 
 namespace bathwright::command {
 
-using Json = nlohmann::ordered_json;
+using namespace work;  // what the verbs put into words and options
 
 /// The exit status of the program.
 enum Exit : int {
@@ -20,25 +23,10 @@ enum Exit : int {
   unfinished = 3,  ///< no convergence, a log or file that could not be used
 };
 
-struct Context {
+struct Context : work::Session {
   bool json = false;
-  std::string log_file;  ///< empty: not given
-  std::vector<std::string> plugin_folders;
-  std::string by, witness, shift;
   std::string pin_file;  ///< empty: PINs are asked for at the terminal
 };
-
-/// "bathwright 0.1.0".
-[[nodiscard]] std::string program_and_version();
-
-/// The head of every document: program, version, warnings.
-[[nodiscard]] Json document(const std::vector<std::string>& warnings);
-
-/// A document as text: on one line, or indented. No zero carries a sign, and what is no UTF-8 is replaced.
-[[nodiscard]] std::string text_of(Json document, int indent = -1);
-
-/// null where there is none.
-[[nodiscard]] Json or_null(const std::optional<double>& value);
 
 void print(const sheets::Lines& lines);
 void print(const Json& document);

@@ -1,4 +1,5 @@
 // bathwright fit FILE: constants from measurements.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/fit_sheet.hpp>
 #include <bathwright/shopfiles/fit_file.hpp>
 

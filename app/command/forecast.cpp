@@ -1,5 +1,6 @@
 // bathwright forecast TANK POLICY: what builds up, when it bites, how much must be bled.
 #include <unistd.h>
+#include <CLI/CLI.hpp>
 
 #include <algorithm>
 #include <bathwright/charts/page_file.hpp>
@@ -15,7 +16,7 @@
 #include <utility>
 
 #include "context.hpp"
-#include "tank_state.hpp"
+#include "work/tank_state.hpp"
 
 namespace bathwright::command {
 namespace {

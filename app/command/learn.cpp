@@ -1,5 +1,6 @@
 // bathwright learn TANK POLICY: what the log tells of drag-out, efficiencies, evaporation and side reactions,
 // and what in it does not fit.
+#include <CLI/CLI.hpp>
 #include <bathwright/learning/log_history.hpp>
 #include <bathwright/sheets/learning_sheet.hpp>
 #include <bathwright/shopfiles/policy_file.hpp>
@@ -10,9 +11,9 @@
 #include <iterator>
 
 #include "context.hpp"
-#include "log/access.hpp"
 #include "policy_text.hpp"
-#include "shop.hpp"
+#include "work/shift_log.hpp"
+#include "work/shop.hpp"
 
 namespace bathwright::command {
 namespace {

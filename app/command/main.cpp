@@ -1,8 +1,10 @@
 // The program `bathwright`: options for all verbs, and which verb runs.
+#include <CLI/CLI.hpp>
 #include <bathwright/base/nearest.hpp>
 #include <cstdio>
 
 #include "context.hpp"
+#include "log/pins.hpp"
 
 using namespace bathwright::command;
 
@@ -43,6 +45,7 @@ int main(int argc, char** argv) {
       "Bathwright: from the readings of a plating tank to an addition sheet that is safe on the way.",
       "bathwright"};
   Context context;
+  context.pin = Pins(context);
   Action action;
   program.set_version_flag("--version", program_and_version());
   program.add_flag("--json", context.json, "print one JSON document instead of text");

@@ -1,11 +1,12 @@
 // bathwright path TANK --add ...: free ions, pH and headroom along an addition.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/path_sheet.hpp>
 #include <bathwright/units/read.hpp>
 
 #include "context.hpp"
-#include "tank_state.hpp"
-#include "view_json.hpp"
-#include "wanted.hpp"
+#include "work/documents.hpp"
+#include "work/tank_state.hpp"
+#include "work/wanted.hpp"
 
 namespace bathwright::command {
 namespace {

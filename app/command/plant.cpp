@@ -1,6 +1,7 @@
 // bathwright plant set-up | grant | send | list | slips | logs | fetch | verify: the shared log of all
 // stations on the plant's PostgreSQL server.
 #include <unistd.h>
+#include <CLI/CLI.hpp>
 
 #include <bathwright/plant/administration.hpp>
 #include <bathwright/plant/station.hpp>

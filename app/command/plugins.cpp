@@ -1,6 +1,7 @@
 // bathwright plugins list | show ID | allow FILE | forget WHICH: which bath types there are, what one says
 // about itself, and whether one that did not come with the program may run.
 #include <unistd.h>
+#include <CLI/CLI.hpp>
 
 #include <bathwright/plugin_host/allow_list.hpp>
 #include <bathwright/sheets/cautions.hpp>
@@ -11,7 +12,7 @@
 
 #include "context.hpp"
 #include "plugins_check.hpp"
-#include "shop.hpp"
+#include "work/shop.hpp"
 
 namespace bathwright::command {
 namespace {

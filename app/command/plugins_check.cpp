@@ -1,4 +1,5 @@
 // bathwright plugins check [WHICH | --all] [--release] [--run]: whether bath types are fit to be given away.
+#include <CLI/CLI.hpp>
 #include <algorithm>
 #include <bathwright/conformance/conformance.hpp>
 #include <bathwright/sheets/table.hpp>
@@ -6,7 +7,7 @@
 
 #include "context.hpp"
 #include "plugins_check.hpp"
-#include "shop.hpp"
+#include "work/shop.hpp"
 
 namespace bathwright::command {
 namespace {

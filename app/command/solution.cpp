@@ -1,4 +1,5 @@
 // bathwright solution FILE: any solution written as formulae, speciated.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/solution_sheet.hpp>
 #include <bathwright/shopfiles/solution_file.hpp>
 #include <bathwright/solution/solution.hpp>

@@ -1,4 +1,5 @@
 // bathwright sources SPECIES: every constant used for a species or solid, and where it came from.
+#include <CLI/CLI.hpp>
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/data/tables.hpp>

@@ -1,10 +1,11 @@
 // bathwright tank TANK: the state of a tank.
+#include <CLI/CLI.hpp>
 #include <bathwright/bath/uncertainty.hpp>
 #include <bathwright/sheets/tank_sheet.hpp>
 
 #include "context.hpp"
-#include "tank_state.hpp"
-#include "view_json.hpp"
+#include "work/documents.hpp"
+#include "work/tank_state.hpp"
 
 namespace bathwright::command {
 namespace {

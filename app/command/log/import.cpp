@@ -1,4 +1,5 @@
 // bathwright log import: a laboratory's CSV file of analyses into the log.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/text.hpp>
 #include <bathwright/shopfiles/analyses_csv.hpp>
 #include <fstream>
@@ -6,6 +7,7 @@
 #include <map>
 #include <set>
 
+#include "shared_options.hpp"
 #include "verbs.hpp"
 
 namespace bathwright::command::log_verb {

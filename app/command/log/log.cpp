@@ -1,4 +1,5 @@
 // bathwright log: the shift log. Its verbs are in the files beside this one.
+#include <CLI/CLI.hpp>
 #include "verbs.hpp"
 
 namespace bathwright::command {

@@ -1,7 +1,8 @@
 // bathwright log people: who may sign.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/table.hpp>
 
-#include "pins.hpp"
+#include "shared_options.hpp"
 #include "verbs.hpp"
 
 namespace bathwright::command::log_verb {
@@ -46,19 +47,18 @@ int changed(const Context& context, Change change) {
   auto opened = open_log_to_write(context);
   if (!opened) return fail(context, opened.problems());
   OpenLog open = *std::move(opened);
-  Pins pins(context);
-  const auto signatures = signatures_for(context, open.log, pins);
+  const auto signatures = signatures_for(context, open.log);
   if (!signatures) return fail(context, signatures.problems());
-  const Result<logbook::Entry> entry = change(open.log, *signatures, pins);
+  const Result<logbook::Entry> entry = change(open.log, *signatures);
   if (!entry) return fail(context, entry.problems());
   return tell(context, Logged{*entry, open.path, open.is_new});
 }
 
 /// A PIN typed twice, since nobody sees it; from a file once.
-Result<std::string> new_pin(const Context& context, const std::string& name, Pins& pins) {
-  auto pin = pins.next("new PIN of " + name);
+Result<std::string> new_pin(const Context& context, const std::string& name) {
+  auto pin = context.pin("new PIN of " + name);
   if (!pin || !context.pin_file.empty()) return pin;
-  const auto again = pins.next("new PIN of " + name + ", again");
+  const auto again = context.pin("new PIN of " + name + ", again");
   if (!again) return again.problems();
   if (*pin != *again)
     return Problem{Fault::bad_input, "PIN", "the two are not the same", "the same PIN twice", "Try again."};
@@ -68,24 +68,22 @@ Result<std::string> new_pin(const Context& context, const std::string& name, Pin
 int admit(const Context& context, const std::string& name, const std::string& role_name) {
   const auto role = logbook::role_of(role_name);
   if (!role) return fail(context, role.problems());
-  return changed(context,
-                 [&](logbook::Logbook& open, const auto& signatures, Pins& pins) -> Result<logbook::Entry> {
-                   const auto pin = new_pin(context, name, pins);
-                   if (!pin) return pin.problems();
-                   return open.admit(name, *role, *pin, signatures);
-                 });
+  return changed(context, [&](logbook::Logbook& open, const auto& signatures) -> Result<logbook::Entry> {
+    const auto pin = new_pin(context, name);
+    if (!pin) return pin.problems();
+    return open.admit(name, *role, *pin, signatures);
+  });
 }
 
 int change_pin(const Context& context) {
-  return changed(
-      context, [&](logbook::Logbook& open, const auto& signatures, Pins& pins) -> Result<logbook::Entry> {
-        const std::string name = signer(context);
-        if (!signatures.by)
-          return Problem{Fault::bad_input, "log people", "the log has no people", "a log with people", ""};
-        const auto pin = new_pin(context, name, pins);
-        if (!pin) return pin.problems();
-        return open.change_pin(*signatures.by, *pin);
-      });
+  return changed(context, [&](logbook::Logbook& open, const auto& signatures) -> Result<logbook::Entry> {
+    const std::string name = signer(context);
+    if (!signatures.by)
+      return Problem{Fault::bad_input, "log people", "the log has no people", "a log with people", ""};
+    const auto pin = new_pin(context, name);
+    if (!pin) return pin.problems();
+    return open.change_pin(*signatures.by, *pin);
+  });
 }
 
 int ask_second(const Context& context, const std::string& tank, const std::vector<std::string>& kinds) {
@@ -95,7 +93,7 @@ int ask_second(const Context& context, const std::string& tank, const std::vecto
     if (!kind) return fail(context, kind.problems());
     rule.kinds.push_back(*kind);
   }
-  return changed(context, [&](logbook::Logbook& open, const auto& signatures, Pins&) {
+  return changed(context, [&](logbook::Logbook& open, const auto& signatures) {
     return open.ask_second_signature(rule, signatures);
   });
 }
@@ -132,14 +130,14 @@ void add_people(CLI::App& log, Context& context, Action& action) {
   });
   with_name("retire", "somebody left; the entries stay")->callback([&context, &action, name] {
     action = [&context, name] {
-      return changed(context, [&](logbook::Logbook& open, const auto& signatures, Pins&) {
+      return changed(context, [&](logbook::Logbook& open, const auto& signatures) {
         return open.retire(*name, signatures);
       });
     };
   });
   with_name("unlock", "ends the shutting out after wrong PINs")->callback([&context, &action, name] {
     action = [&context, name] {
-      return changed(context, [&](logbook::Logbook& open, const auto& signatures, Pins&) {
+      return changed(context, [&](logbook::Logbook& open, const auto& signatures) {
         return open.unlock(*name, signatures);
       });
     };

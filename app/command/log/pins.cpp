@@ -3,12 +3,9 @@
 #include <termios.h>
 #include <unistd.h>
 
-#include <algorithm>
 #include <cstdio>
 #include <fstream>
 #include <iostream>
-
-#include "access.hpp"
 
 namespace bathwright::command {
 namespace {
@@ -36,9 +33,9 @@ Problem no_pin(const std::string& where, const std::string& whose) {
 
 }  // namespace
 
-Result<std::string> Pins::next(const std::string& whose) {
+Result<std::string> Pins::operator()(const std::string& whose) {
   std::string pin;
-  if (file_.empty()) {
+  if (context_.pin_file.empty()) {
     if (isatty(STDIN_FILENO) == 0)
       return Problem{Fault::bad_input, "--pin-file",
                      "the " + whose + " can not be asked for: this is no terminal",
@@ -49,36 +46,18 @@ Result<std::string> Pins::next(const std::string& whose) {
     std::fprintf(stderr, "\n");
     return pin;
   }
-  if (file_ == "-") {
+  if (context_.pin_file == "-") {
     if (!std::getline(std::cin, pin)) return no_pin("standard input", whose);
     return pin;
   }
-  std::ifstream in(file_);
+  std::ifstream in(context_.pin_file);
   if (!in)
-    return Problem{Fault::io, file_, "the file cannot be read", "a file with one PIN a line",
+    return Problem{Fault::io, context_.pin_file, "the file cannot be read", "a file with one PIN a line",
                    "Check the path."};
   for (std::size_t line = 0; line <= taken_; ++line)
-    if (!std::getline(in, pin)) return no_pin(file_ + ":" + std::to_string(line + 1), whose);
+    if (!std::getline(in, pin)) return no_pin(context_.pin_file + ":" + std::to_string(line + 1), whose);
   ++taken_;
   return pin;
-}
-
-Result<logbook::Signatures> signatures_for(const Context& context, const logbook::Logbook& log, Pins& pins) {
-  logbook::Signatures signatures;
-  const auto people = log.people();
-  if (!people) return people.problems();
-  if (people->empty() && context.witness.empty()) return signatures;
-  const std::string name = signer(context);
-  for (const auto& [who, credential] :
-       {std::pair{name, &signatures.by}, std::pair{context.witness, &signatures.witness}}) {
-    if (who.empty()) continue;
-    // A name the log does not know is answered by the log; its PIN is nobody's business.
-    const bool known = std::ranges::find(*people, who, &logbook::Person::name) != people->end();
-    auto pin = known ? pins.next("PIN of " + who) : Result<std::string>(std::string());
-    if (!pin) return pin.problems();
-    *credential = logbook::Credential{who, *std::move(pin)};
-  }
-  return signatures;
 }
 
 }  // namespace bathwright::command

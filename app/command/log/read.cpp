@@ -1,4 +1,5 @@
 // bathwright log list | show | verify | anchor | export: what stands in the shift log.
+#include <CLI/CLI.hpp>
 #include <bathwright/logbook/salvage.hpp>
 #include <bathwright/sheets/log_csv.hpp>
 #include <bathwright/sheets/log_sheet.hpp>

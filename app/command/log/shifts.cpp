@@ -1,10 +1,12 @@
 // bathwright log shifts | hand-over: the shop's calendar, and what one shift tells the next.
+#include <CLI/CLI.hpp>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/hand_over/hand_over.hpp>
 #include <bathwright/sheets/hand_over_sheet.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 
+#include "shared_options.hpp"
 #include "verbs.hpp"
 
 namespace bathwright::command::log_verb {

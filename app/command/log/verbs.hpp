@@ -3,12 +3,14 @@
 
 #include <algorithm>
 
-#include "access.hpp"
+#include "context.hpp"
+#include "work/shift_log.hpp"
 
 namespace bathwright::command::log_verb {
 
 /// Each adds its verbs below `log`.
-void add_reading(CLI::App& log, Context& context, Action& action);  ///< list, show, verify, anchor, salvage, export
+void add_reading(CLI::App& log, Context& context,
+                 Action& action);  ///< list, show, verify, anchor, salvage, export
 void add_writing(CLI::App& log, Context& context, Action& action);  ///< add, correct, close
 void add_import(CLI::App& log, Context& context, Action& action);   ///< import
 void add_people(CLI::App& log, Context& context, Action& action);   ///< people

@@ -1,6 +1,8 @@
 // bathwright log add | correct | approve | close: entries by hand.
+#include <CLI/CLI.hpp>
 #include <bathwright/sheets/text.hpp>
 
+#include "shared_options.hpp"
 #include "verbs.hpp"
 
 namespace bathwright::command::log_verb {

@@ -3,7 +3,7 @@
 
 #include <filesystem>
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 /// For what must be kept: the log, the user's bath types and which are allowed. $XDG_DATA_HOME/bathwright,
 /// else
@@ -16,4 +16,4 @@ namespace bathwright::command {
 /// For what can be made again: $XDG_CACHE_HOME/bathwright, else ~/.cache/bathwright.
 [[nodiscard]] std::filesystem::path cache_folder();
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -7,9 +7,9 @@
 #include <fstream>
 #include <iterator>
 
-#include "view_json.hpp"
+#include "documents.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 namespace {
 
 /// The tank as an analysis of the log left it. Salt views repeat what the other levels say and are left out.
@@ -23,13 +23,13 @@ Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
 }
 
 /// What the log has of the tank up to these readings.
-Result<std::optional<book::FromLog>> book_before(const Context& context, const Shop& shop,
+Result<std::optional<book::FromLog>> book_before(const Session& session, const Shop& shop,
                                                  const std::string& readings_path,
                                                  const std::string& sampled) {
   std::error_code failure;
-  if (context.log_file.empty() || !std::filesystem::exists(log_path(context), failure))
+  if (session.log_file.empty() || !std::filesystem::exists(log_path(session), failure))
     return std::optional<book::FromLog>{};
-  const auto log = open_log_to_read(context);
+  const auto log = open_log_to_read(session);
   if (!log) return log.problems();
   const auto calendar = calendar_of(*log);
   if (!calendar) return calendar.problems();
@@ -60,7 +60,7 @@ bool same_figures(const Json& a, const Json& b) {
 
 }  // namespace
 
-Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path) {
+Result<Analysed> analyse(const Session& session, const Shop& shop, const std::string& readings_path) {
   auto readings = shopfiles::read_readings(readings_path);
   if (!readings) {
     if (shopfiles::read_tank(readings_path, matter::StockCatalogue::built_in()))
@@ -68,9 +68,9 @@ Result<Analysed> analyse(const Context& context, const Shop& shop, const std::st
                      "Give the tank first, then its readings."};
     return readings.problems();
   }
-  const auto last = last_analysis(context, shop.tank.name);
+  const auto last = last_analysis(session, shop.tank.name);
   if (!last) return last.problems();
-  const auto carried = book_before(context, shop, readings_path, readings->sampled);
+  const auto carried = book_before(session, shop, readings_path, readings->sampled);
   if (!carried) return carried.problems();
   std::optional<analysis::Book> book;
   if (*carried)
@@ -107,16 +107,16 @@ Result<logbook::NewEntry> entry_computed(const Shop& shop, const std::string& re
   return entry;
 }
 
-Result<StartingState> starting_state(const Context& context, const Shop& shop,
+Result<StartingState> starting_state(const Session& session, const Shop& shop,
                                      const std::string& readings_path) {
   if (!readings_path.empty()) {
-    auto analysed = analyse(context, shop, readings_path);
+    auto analysed = analyse(session, shop, readings_path);
     if (!analysed) return analysed.problems();
     const analysis::Analysis& a = analysed->analysis;
     return StartingState{a.state,
                          {"readings of " + readings_path, a.temperature, a.pH, analysed->changed_since}};
   }
-  const auto last = last_analysis(context, shop.tank.name);
+  const auto last = last_analysis(session, shop.tank.name);
   if (!last) return last.problems();
   if (*last) {
     auto state = state_of(**last, shop);
@@ -139,4 +139,4 @@ Result<StartingState> starting_state(const Context& context, const Shop& shop,
       {"as at its aims and at the mark; no readings and no log were given", shop.tank.temperature, pH, {}}};
 }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

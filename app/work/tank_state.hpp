@@ -3,17 +3,17 @@
 
 #include <bathwright/sheets/tank_sheet.hpp>
 
-#include "log/access.hpp"
+#include "shift_log.hpp"
 #include "shop.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 struct StartingState {
   bath::TankState state;
   sheets::StateRead read;
 };
 
-Result<StartingState> starting_state(const Context& context, const Shop& shop,
+Result<StartingState> starting_state(const Session& session, const Shop& shop,
                                      const std::string& readings_path);
 
 /// Readings worked out, with the last logged analysis as the book.
@@ -23,10 +23,10 @@ struct Analysed {
   std::optional<std::int64_t> logged_as;   ///< where the last logged analysis is of the same readings
   std::vector<std::string> changed_since;  ///< what the log has of the tank after it, a sentence each
 };
-Result<Analysed> analyse(const Context& context, const Shop& shop, const std::string& readings_path);
+Result<Analysed> analyse(const Session& session, const Shop& shop, const std::string& readings_path);
 
 /// What was computed from a tank's file and readings as an entry, with both files' texts and the bath type.
 Result<logbook::NewEntry> entry_computed(const Shop& shop, const std::string& readings_path,
                                          logbook::EntryKind kind, Json body);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

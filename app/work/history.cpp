@@ -2,7 +2,7 @@
 
 #include <bathwright/sheets/log_sheet.hpp>
 
-namespace bathwright::command {
+namespace bathwright::work {
 namespace {
 
 sheets::Before results_of(const logbook::Entry& entry, const Json& document,
@@ -21,12 +21,12 @@ sheets::Before results_of(const logbook::Entry& entry, const Json& document,
 
 }  // namespace
 
-Result<History> history_of(const Context& context, const std::string& tank, std::size_t count,
+Result<History> history_of(const Session& session, const std::string& tank, std::size_t count,
                            std::optional<std::int64_t> before) {
   History history;
   std::error_code failure;
-  if (context.log_file.empty() || !std::filesystem::exists(log_path(context), failure)) return history;
-  const auto log = open_log_to_read(context);
+  if (session.log_file.empty() || !std::filesystem::exists(log_path(session), failure)) return history;
+  const auto log = open_log_to_read(session);
   if (!log) return log.problems();
   const auto calendar = calendar_of(*log);
   if (!calendar) return calendar.problems();
@@ -51,4 +51,4 @@ Result<History> history_of(const Context& context, const std::string& tank, std:
   return history;
 }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -5,15 +5,15 @@
 #include <bathwright/bath/chemistry.hpp>
 #include <bathwright/plugin_host/registry.hpp>
 
-#include "context.hpp"
+#include "session.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 /// The program's own plugin folders, the user's, then those named with --plugins; the user's data and cache.
-[[nodiscard]] plugin_host::Places plugin_places(const Context& context);
+[[nodiscard]] plugin_host::Places plugin_places(const Session& session);
 
 /// What those places have.
-[[nodiscard]] plugin_host::BathTypes known_bath_types(const Context& context);
+[[nodiscard]] plugin_host::BathTypes known_bath_types(const Session& session);
 
 struct Shop {
   bath::Tank tank;
@@ -25,14 +25,9 @@ struct Shop {
 
 /// Reads the tank and prepares its chemistry. Fails on the file, on a bath type nobody provides, on aims at
 /// quantities the bath type does not have, on temperatures it does not cover.
-Result<Shop> open_shop(const Context& context, const std::string& tank_path);
-
-using RunOnReadings =
-    std::function<int(const Context&, const std::string& tank, const std::string& readings)>;
-/// TANK and READINGS, for verbs that work readings out, and the action that takes them.
-void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, RunOnReadings run);
+Result<Shop> open_shop(const Session& session, const std::string& tank_path);
 
 /// The state of a tank as the tank's own aims describe it, at the mark.
 Result<bath::TankState> state_at_aims(const Shop& shop);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

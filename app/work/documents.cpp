@@ -1,11 +1,18 @@
-#include "view_json.hpp"
+#include "documents.hpp"
 
 #include <algorithm>
 #include <bathwright/sheets/analysis_sheet.hpp>
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 namespace {
+
+void unsign_zeros(Json& value) {
+  if (value.is_structured())
+    for (Json& element : value) unsign_zeros(element);
+  else if (value.is_number_float() && value.get<double>() == 0)
+    value = 0.0;
+}
 
 /// The rows and columns of the component amounts, without the volume's, which are the last.
 std::vector<double> of_the_amounts(const std::vector<double>& covariance, std::size_t components) {
@@ -18,6 +25,17 @@ std::vector<double> of_the_amounts(const std::vector<double>& covariance, std::s
 }
 
 }  // namespace
+
+Json document(const std::vector<std::string>& warnings) {
+  return {{"program", "bathwright"}, {"version", BATHWRIGHT_VERSION}, {"warnings", warnings}};
+}
+
+Json or_null(const std::optional<double>& value) { return value ? Json(*value) : Json(); }
+
+std::string text_of(Json document, int indent) {
+  unsign_zeros(document);
+  return document.dump(indent, ' ', false, Json::error_handler_t::replace);
+}
 
 Json concentrations(const bath::BathType& type, const bath::TankView& view) {
   Json object = Json::object();
@@ -139,4 +157,4 @@ bool all_in_window(const std::vector<sheets::Judged>& judged) {
                      [](const auto& j) { return j.standing == sheets::Standing::in_window; });
 }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

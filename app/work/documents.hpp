@@ -1,13 +1,24 @@
-// Parts of documents that several verbs share.
+// Documents for machines and for the log: their head, their text, and the parts that several share.
 #pragma once
 
 #include <bathwright/analysis/analysis.hpp>
 #include <bathwright/bath/chemistry.hpp>
 #include <bathwright/sheets/standing.hpp>
+#include <nlohmann/json.hpp>
+#include <optional>
 
-#include "context.hpp"
+namespace bathwright::work {
 
-namespace bathwright::command {
+using Json = nlohmann::ordered_json;
+
+/// The head of every document: program, version, warnings.
+[[nodiscard]] Json document(const std::vector<std::string>& warnings);
+
+/// A document as text: on one line, or indented. No zero carries a sign, and what is no UTF-8 is replaced.
+[[nodiscard]] std::string text_of(Json document, int indent = -1);
+
+/// null where there is none.
+[[nodiscard]] Json or_null(const std::optional<double>& value);
 
 /// {quantity id: g/L}
 [[nodiscard]] Json concentrations(const bath::BathType& type, const bath::TankView& view);
@@ -27,4 +38,4 @@ namespace bathwright::command {
 
 [[nodiscard]] bool all_in_window(const std::vector<sheets::Judged>& judged);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

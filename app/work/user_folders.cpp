@@ -5,7 +5,7 @@
 
 #include <cstdlib>
 
-namespace bathwright::command {
+namespace bathwright::work {
 namespace {
 
 namespace fs = std::filesystem;
@@ -34,4 +34,4 @@ fs::path data_folder() { return own("XDG_DATA_HOME", ".local/share"); }
 fs::path state_folder() { return own("XDG_STATE_HOME", ".local/state"); }
 fs::path cache_folder() { return own("XDG_CACHE_HOME", ".cache"); }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

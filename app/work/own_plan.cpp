@@ -4,7 +4,7 @@
 
 #include "wanted.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 Result<dosing::AdditionSheet> check_own_plan(const Shop& shop, const bath::TankState& now,
                                              const std::string& plan_path) {
@@ -23,4 +23,4 @@ Result<dosing::AdditionSheet> check_own_plan(const Shop& shop, const bath::TankS
   return dosing::check_plan(shop.tank, shop.chemistry, now, wanted);
 }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -10,7 +10,7 @@
 
 #include "user_folders.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 namespace {
 
 std::string joined(const std::vector<std::string>& words) {
@@ -51,10 +51,10 @@ Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
 
 }  // namespace
 
-plugin_host::Places plugin_places(const Context& context) {
+plugin_host::Places plugin_places(const Session& session) {
   plugin_host::Places places = plugin_host::built_in_places();
   places.folders.push_back({data_folder() / "plugins", plugin_host::Origin::user});
-  for (const std::string& folder : context.plugin_folders)
+  for (const std::string& folder : session.plugin_folders)
     places.folders.push_back({folder, plugin_host::Origin::named});
   places.data = data_folder();
   places.state = state_folder();
@@ -63,11 +63,11 @@ plugin_host::Places plugin_places(const Context& context) {
   return places;
 }
 
-plugin_host::BathTypes known_bath_types(const Context& context) {
-  return plugin_host::BathTypes::discover(plugin_places(context));
+plugin_host::BathTypes known_bath_types(const Session& session) {
+  return plugin_host::BathTypes::discover(plugin_places(session));
 }
 
-Result<Shop> open_shop(const Context& context, const std::string& tank_path) {
+Result<Shop> open_shop(const Session& session, const std::string& tank_path) {
   auto tank = shopfiles::read_tank(tank_path, matter::StockCatalogue::built_in());
   if (!tank) {
     if (shopfiles::read_readings(tank_path))
@@ -75,7 +75,7 @@ Result<Shop> open_shop(const Context& context, const std::string& tank_path) {
                      "Give the tank first, then its readings."};
     return tank.problems();
   }
-  const plugin_host::BathTypes types = known_bath_types(context);
+  const plugin_host::BathTypes types = known_bath_types(session);
   const bath::BathType* type = types.find(tank->bath_type);
   if (!type) return unknown_bath_type(*tank, types);
   if (Problems problems = unknown_aims(*tank, *type); !problems.empty()) return problems;
@@ -92,16 +92,4 @@ Result<bath::TankState> state_at_aims(const Shop& shop) {
   return bath::state_at_aims(shop.tank, shop.chemistry);
 }
 
-void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, RunOnReadings run) {
-  auto tank = std::make_shared<std::string>();
-  auto readings = std::make_shared<std::string>();
-  verb.add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
-  verb.add_option("READINGS", *readings, "burette readings, pH, level, temperature, TOML")
-      ->required()
-      ->check(CLI::ExistingFile);
-  verb.callback([&context, &action, run, tank, readings] {
-    action = [&context, run, tank, readings] { return run(context, *tank, *readings); };
-  });
-}
-
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -1,4 +1,4 @@
-// The shift log as the verbs use it: where it is, writing an entry, the last analysis of a tank.
+// The shift log: where it is, writing an entry, the last analysis of a tank.
 #pragma once
 
 #include <bathwright/analysis/analysis.hpp>
@@ -6,22 +6,20 @@
 #include <bathwright/shifts/calendar.hpp>
 #include <filesystem>
 
-#include "context.hpp"
+#include "documents.hpp"
+#include "session.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 /// --log, or shift-log.sqlite in the user's data folder ($XDG_DATA_HOME/bathwright,
 /// ~/.local/share/bathwright).
-[[nodiscard]] std::filesystem::path log_path(const Context& context);
-
-/// Who signs: --by, else the user of the computer, else "unsigned".
-[[nodiscard]] std::string signer(const Context& context);
+[[nodiscard]] std::filesystem::path log_path(const Session& session);
 
 /// The computer's clock, for every log that is opened here.
 [[nodiscard]] const logbook::Clock& wall_clock();
 
 /// Opens for reading; a log that does not exist is bad input.
-Result<logbook::Logbook> open_log_to_read(const Context& context);
+Result<logbook::Logbook> open_log_to_read(const Session& session);
 
 /// Opens for writing, with this program's and this station's names. Makes the log, and the data folder where
 /// no
@@ -31,23 +29,27 @@ struct OpenLog {
   std::filesystem::path path;
   bool is_new = false;
 };
-Result<OpenLog> open_log_to_write(const Context& context);
+Result<OpenLog> open_log_to_write(const Session& session);
 
 /// The calendar of the log's shifts; nothing where none were set.
 Result<std::optional<shifts::Calendar>> calendar_of(const logbook::Logbook& log);
 
-/// The log with one entry more, signed with the context's names and PINs. The shift is the context's, else
+/// The log with one entry more, signed with the session's names and PINs. The shift is the session's, else
 /// that of the hour. Makes the log on the first entry.
 struct Logged {
   logbook::Entry entry;
   std::filesystem::path path;
   bool new_log = false;
 };
-Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry);
+Result<Logged> append_to_log(const Session& session, logbook::NewEntry entry);
+
+/// Signatures of the session's signer and witness for a log; none where the log has no people and nobody is
+/// named as witness.
+Result<logbook::Signatures> signatures_for(const Session& session, const logbook::Logbook& log);
 
 /// Several at once, all or none, into an open log; by and shift are filled in as above, the shift where an
 /// entry has none, by when it happened.
-Result<std::vector<logbook::Entry>> append_all(const Context& context, OpenLog& open,
+Result<std::vector<logbook::Entry>> append_all(const Session& session, OpenLog& open,
                                                std::vector<logbook::NewEntry> entries);
 
 /// "Logged as entry 12 in shift-log.sqlite."
@@ -65,9 +67,6 @@ struct LastAnalysis {
 
 /// The last analysis of the tank in --log; nothing without --log, without a file there or without an analysis
 /// in it.
-Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const std::string& tank);
+Result<std::optional<LastAnalysis>> last_analysis(const Session& session, const std::string& tank);
 
-/// --by, --witness, --pin-file and --shift, for verbs that log.
-void add_signature(CLI::App& verb, Context& context);
-
-}  // namespace bathwright::command
+}  // namespace bathwright::work

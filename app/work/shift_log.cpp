@@ -1,17 +1,16 @@
-#include "access.hpp"
+#include "shift_log.hpp"
 
 #include <limits.h>
 #include <unistd.h>
 
+#include <algorithm>
 #include <array>
 #include <bathwright/logbook/file_digest.hpp>
-#include <cstdlib>
 #include <system_error>
 
-#include "pins.hpp"
 #include "user_folders.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 namespace {
 
 namespace fs = std::filesystem;
@@ -31,11 +30,6 @@ const std::string& program_and_hash() {
   return text;
 }
 
-std::string environment(const char* name) {
-  const char* value = std::getenv(name);
-  return value ? value : "";
-}
-
 }  // namespace
 
 const logbook::Clock& wall_clock() {
@@ -43,29 +37,23 @@ const logbook::Clock& wall_clock() {
   return clock;
 }
 
-fs::path log_path(const Context& context) {
-  return context.log_file.empty() ? data_folder() / "shift-log.sqlite" : fs::path(context.log_file);
+fs::path log_path(const Session& session) {
+  return session.log_file.empty() ? data_folder() / "shift-log.sqlite" : fs::path(session.log_file);
 }
 
-std::string signer(const Context& context) {
-  if (!context.by.empty()) return context.by;
-  const std::string user = environment("USER");
-  return user.empty() ? "unsigned" : user;
-}
-
-Result<logbook::Logbook> open_log_to_read(const Context& context) {
+Result<logbook::Logbook> open_log_to_read(const Session& session) {
   std::error_code failure;
-  if (!fs::exists(log_path(context), failure) && !failure)
-    return Problem{Fault::bad_input, log_path(context).string(), "no log is here", "the file of a shift log",
+  if (!fs::exists(log_path(session), failure) && !failure)
+    return Problem{Fault::bad_input, log_path(session).string(), "no log is here", "the file of a shift log",
                    "Name one with --log FILE, or write the first entry with bathwright log add."};
-  return logbook::Logbook::open(log_path(context), logbook::OpenMode::read_only, wall_clock());
+  return logbook::Logbook::open(log_path(session), logbook::OpenMode::read_only, wall_clock());
 }
 
-Result<OpenLog> open_log_to_write(const Context& context) {
-  const fs::path path = log_path(context);
+Result<OpenLog> open_log_to_write(const Session& session) {
+  const fs::path path = log_path(session);
   std::error_code failure;
   const bool is_new = !fs::exists(path, failure);
-  if (context.log_file.empty()) {
+  if (session.log_file.empty()) {
     fs::create_directories(path.parent_path(), failure);
     if (failure)
       return Problem{Fault::io, path.parent_path().string(), failure.message(), "a folder for the shift log",
@@ -88,16 +76,33 @@ Result<std::optional<shifts::Calendar>> calendar_of(const logbook::Logbook& log)
   return std::optional(*std::move(calendar));
 }
 
-Result<std::vector<logbook::Entry>> append_all(const Context& context, OpenLog& open,
+Result<logbook::Signatures> signatures_for(const Session& session, const logbook::Logbook& log) {
+  logbook::Signatures signatures;
+  const auto people = log.people();
+  if (!people) return people.problems();
+  if (people->empty() && session.witness.empty()) return signatures;
+  const std::string name = signer(session);
+  for (const auto& [who, credential] :
+       {std::pair{name, &signatures.by}, std::pair{session.witness, &signatures.witness}}) {
+    if (who.empty()) continue;
+    // A name the log does not know is answered by the log; its PIN is nobody's business.
+    const bool known = std::ranges::find(*people, who, &logbook::Person::name) != people->end();
+    auto pin = known ? session.pin("PIN of " + who) : Result<std::string>(std::string());
+    if (!pin) return pin.problems();
+    *credential = logbook::Credential{who, *std::move(pin)};
+  }
+  return signatures;
+}
+
+Result<std::vector<logbook::Entry>> append_all(const Session& session, OpenLog& open,
                                                std::vector<logbook::NewEntry> entries) {
-  Pins pins(context);
-  const auto signatures = signatures_for(context, open.log, pins);
+  const auto signatures = signatures_for(session, open.log);
   if (!signatures) return signatures.problems();
   const auto calendar = calendar_of(open.log);
   if (!calendar) return calendar.problems();
   for (logbook::NewEntry& entry : entries) {
-    entry.by = signer(context);
-    entry.shift = context.shift;
+    entry.by = signer(session);
+    entry.shift = session.shift;
     if (!entry.shift.empty() || !*calendar) continue;
     const auto shift = (*calendar)->shift_at(entry.happened.value_or(wall_clock().utc_now()));
     if (shift) entry.shift = shift->label;
@@ -105,11 +110,11 @@ Result<std::vector<logbook::Entry>> append_all(const Context& context, OpenLog& 
   return open.log.append_all(entries, *signatures);
 }
 
-Result<Logged> append_to_log(const Context& context, logbook::NewEntry entry) {
-  auto opened = open_log_to_write(context);
+Result<Logged> append_to_log(const Session& session, logbook::NewEntry entry) {
+  auto opened = open_log_to_write(session);
   if (!opened) return opened.problems();
   OpenLog open = *std::move(opened);
-  const auto logged = append_all(context, open, {std::move(entry)});
+  const auto logged = append_all(session, open, {std::move(entry)});
   if (!logged) return logged.problems();
   return Logged{logged->front(), open.path, open.is_new};
 }
@@ -193,11 +198,11 @@ std::optional<LastAnalysis> analysis_in(const logbook::Entry& entry) {
 
 }  // namespace
 
-Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const std::string& tank) {
+Result<std::optional<LastAnalysis>> last_analysis(const Session& session, const std::string& tank) {
   std::error_code failure;
-  if (context.log_file.empty() || !fs::exists(log_path(context), failure))
+  if (session.log_file.empty() || !fs::exists(log_path(session), failure))
     return std::optional<LastAnalysis>{};
-  const auto log = open_log_to_read(context);
+  const auto log = open_log_to_read(session);
   if (!log) return log.problems();
   logbook::Filter filter;
   filter.tank = tank;
@@ -230,12 +235,4 @@ Result<std::optional<LastAnalysis>> last_analysis(const Context& context, const 
                  "levels, volume, temperature and pH", "Analyse the tank, or give readings."};
 }
 
-void add_signature(CLI::App& verb, Context& context) {
-  verb.add_option("--by", context.by, "who signs the entry; else the user of the computer");
-  verb.add_option("--witness", context.witness, "who signs second, where the tank asks for it");
-  verb.add_option("--pin-file", context.pin_file,
-                  "PINs, one a line, the signer's first; - for standard input. Else they are asked for");
-  verb.add_option("--shift", context.shift, "name of the shift; else the log's shift of this hour");
-}
-
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -4,10 +4,10 @@
 #include <bathwright/dosing/plan.hpp>
 #include <bathwright/sheets/addition_sheet.hpp>
 
-#include "log/history.hpp"
+#include "history.hpp"
 #include "tank_state.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 /// What keeps the best plan from being carried out beside the plan itself, a sentence each: lots past their
 /// day, limits that were changed without a new revision.
@@ -29,7 +29,7 @@ struct LoggedDose {
 
 /// Logs the analysis, unless it is the last in the log, the plan made from it (`doc`), and the slip where one
 /// is wanted: together or not at all.
-Result<LoggedDose> log_dose(const Context& context, const Shop& shop, const std::string& readings_path,
+Result<LoggedDose> log_dose(const Session& session, const Shop& shop, const std::string& readings_path,
                             const Analysed& analysed, const Json& doc, bool issue_slip);
 
 [[nodiscard]] sheets::Lines lines_of(const LoggedDose& logged);
@@ -41,6 +41,6 @@ struct DoseToPrint {
   const History& history;
   const std::optional<LoggedDose>& logged;
 };
-[[nodiscard]] sheets::Page page_of(const Context& context, const Shop& shop, const DoseToPrint& dose);
+[[nodiscard]] sheets::Page page_of(const Session& session, const Shop& shop, const DoseToPrint& dose);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

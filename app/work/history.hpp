@@ -3,9 +3,9 @@
 
 #include <bathwright/sheets/addition_sheet.hpp>
 
-#include "access.hpp"
+#include "shift_log.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 struct History {
   std::vector<sheets::Before> results;  ///< of entries before `before`, newest first
@@ -15,7 +15,7 @@ struct History {
 
 /// The tank's last `count` analyses in --log that nobody corrected; empty without a log.
 ///   before  the entry that the readings at hand are logged as, where they are
-Result<History> history_of(const Context& context, const std::string& tank, std::size_t count,
+Result<History> history_of(const Session& session, const std::string& tank, std::size_t count,
                            std::optional<std::int64_t> before = std::nullopt);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -5,10 +5,10 @@
 
 #include "shop.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 /// The list of a file gone through from this state (dosing/check_plan.hpp).
 Result<dosing::AdditionSheet> check_own_plan(const Shop& shop, const bath::TankState& now,
                                              const std::string& plan_path);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -3,7 +3,7 @@
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/units/read.hpp>
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 Result<WantedAmount> read_wanted(const Shop& shop, const std::string& amount, const std::string& id,
                                  const std::string& where) {
@@ -33,4 +33,4 @@ Problems problems_of(const std::vector<dosing::Refusal>& refused, const std::str
   return problems;
 }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

@@ -3,9 +3,9 @@
 #include <bathwright/sheets/log_sheet.hpp>
 #include <cmath>
 
-#include "view_json.hpp"
+#include "documents.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 namespace {
 
 /// Whether a document of `analyse` judged one of the tank's aims by other limits than it has now.
@@ -63,7 +63,7 @@ std::string hindrance(const dosing::AdditionSheet& sheet, const Analysed& analys
   return stops.empty() ? "" : stops.front();
 }
 
-Result<LoggedDose> log_dose(const Context& context, const Shop& shop, const std::string& readings_path,
+Result<LoggedDose> log_dose(const Session& session, const Shop& shop, const std::string& readings_path,
                             const Analysed& analysed, const Json& doc, bool issue_slip) {
   LoggedDose logged;
   std::vector<logbook::NewEntry> entries;
@@ -87,10 +87,10 @@ Result<LoggedDose> log_dose(const Context& context, const Shop& shop, const std:
             add(logbook::EntryKind::slip, {{"plan", doc["plans"].front()}, {"cautions", doc["cautions"]}});
         !added)
       return added.problems();
-  auto opened = open_log_to_write(context);
+  auto opened = open_log_to_write(session);
   if (!opened) return opened.problems();
   OpenLog open = *std::move(opened);
-  const auto written = append_all(context, open, std::move(entries));
+  const auto written = append_all(session, open, std::move(entries));
   if (!written) return written.problems();
   const auto calendar = calendar_of(open.log);
   if (!calendar) return calendar.problems();
@@ -117,20 +117,20 @@ sheets::Lines lines_of(const LoggedDose& logged) {
   return lines;
 }
 
-sheets::Page page_of(const Context& context, const Shop& shop, const DoseToPrint& dose) {
+sheets::Page page_of(const Session& session, const Shop& shop, const DoseToPrint& dose) {
   const bool issued = dose.logged && dose.logged->slip;
   sheets::Signature signature;
-  signature.prepared_by = signer(context);
-  signature.shift = context.shift;
+  signature.prepared_by = signer(session);
+  signature.shift = session.shift;
   signature.program = program_and_version();
   if (dose.logged) signature.issued = dose.logged->at;
   if (issued) {
     signature.slip = dose.logged->slip;
-    signature.approved_by = context.witness;
+    signature.approved_by = session.witness;
   }
   return sheets::addition_page({shop.tank, shop.type(), dose.analysed.readings, dose.analysed.analysis,
                                 dose.sheet, dose.analysed.changed_since, dose.stops, dose.history.results,
                                 std::move(signature)});
 }
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work

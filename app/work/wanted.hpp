@@ -5,7 +5,7 @@
 
 #include "shop.hpp"
 
-namespace bathwright::command {
+namespace bathwright::work {
 
 /// So much of a chemical, as typed.
 struct WantedAmount {
@@ -22,4 +22,4 @@ Result<WantedAmount> read_wanted(const Shop& shop, const std::string& amount, co
 /// What an interlock refuses, as problems of this place.
 [[nodiscard]] Problems problems_of(const std::vector<dosing::Refusal>& refused, const std::string& where);
 
-}  // namespace bathwright::command
+}  // namespace bathwright::work
