@@ -1,0 +1,80 @@
+#include "panels.hpp"
+
+namespace bathwright::desktop {
+namespace {
+
+void draw_amounts(const AdditionsView& view, Intents& out) {
+  if (!ImGui::BeginTable("amounts", 3, ImGuiTableFlags_SizingStretchProp)) return;
+  for (const auto& [name, weight] : {std::pair{"chemical", 1.6F}, {"amount", 2.4F}, {"cost", 0.8F}})
+    ImGui::TableSetupColumn(name, 0, weight);
+  for (std::size_t i = 0; i < view.additions.size(); ++i) {
+    const AdditionRow& row = view.additions[i];
+    ImGui::TableNextRow();
+    ImGui::TableNextColumn();
+    ImGui::AlignTextToFramePadding();
+    ImGui::TextUnformatted(row.chemical.c_str());
+    ImGui::TableNextColumn();
+    ImGui::PushID(static_cast<int>(i));
+    ImGui::SetNextItemWidth(-1);
+    double amount = row.amount;
+    const double least = 0;
+    const std::string form = (row.largest < 10 ? "%.3f " : "%.2f ") + row.unit;
+    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, form.c_str()))
+      out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
+    ImGui::PopID();
+    ImGui::TableNextColumn();
+    ImGui::AlignTextToFramePadding();
+    right_aligned(row.cost);
+  }
+  ImGui::EndTable();
+}
+
+void draw_step(const StepRow& step, int index, const Look& look, Intents& out) {
+  ImGui::PushID(index);
+  bool done = false;
+  if (ImGui::Checkbox("##done", &done) && !step.refused) out.emplace_back(LogStepDone{index});
+  ImGui::SameLine();
+  bold(look, step.number + "  " + step.what);
+  ImGui::Indent(look.px(32));
+  for (const std::string& why : step.stops) standing(look, static_cast<int>(charts::State::stop), why);
+  if (!step.how.empty()) said(look, look.palette.ink, step.how);
+  if (!step.then.empty()) said(look, look.palette.predicted, "then " + step.then);
+  for (const std::string& what : step.watch) standing(look, static_cast<int>(charts::State::act), what);
+  if (step.stops.empty())
+    quiet(look, std::to_string(step.checks) + " checks passed" + (step.wait.empty() ? "" : "; " + step.wait));
+  ImGui::Unindent(look.px(32));
+  ImGui::PopID();
+}
+
+}  // namespace
+
+void draw_additions(const AdditionsView& view, const Look& look, Intents& out) {
+  heading(look, "Additions");
+  if (view.plans.empty() && view.refused.empty()) {
+    quiet(look, view.working ? "planning ..." : "Type the readings above; the additions follow.");
+    return;
+  }
+  for (std::size_t i = 0; i < view.plans.size(); ++i) {
+    if (i > 0) ImGui::SameLine();
+    if (ImGui::RadioButton(view.plans[i].c_str(), static_cast<int>(i) == view.plan && !view.edited))
+      out.emplace_back(ChoosePlan{static_cast<int>(i)});
+  }
+  if (view.edited) {
+    said(look, look.palette.act, "amounts changed by hand");
+    ImGui::SameLine();
+    if (ImGui::SmallButton("back to the plan")) out.emplace_back(BackToPlan{});
+  }
+  draw_amounts(view, out);
+  if (!view.chance.empty()) quiet(look, view.chance);
+  for (const std::string& unmet : view.unmet) standing(look, static_cast<int>(charts::State::act), unmet);
+  for (const std::string& refused : view.refused)
+    standing(look, static_cast<int>(charts::State::stop), refused);
+  for (std::size_t i = 0; i < view.steps.size(); ++i)
+    draw_step(view.steps[i], static_cast<int>(i), look, out);
+  if (!view.cautions.empty() && ImGui::TreeNodeEx("Handling cautions", ImGuiTreeNodeFlags_DefaultOpen)) {
+    for (const std::string& caution : view.cautions) said(look, look.palette.ink, caution);
+    ImGui::TreePop();
+  }
+}
+
+}  // namespace bathwright::desktop

@@ -1,0 +1,86 @@
+#include "panels.hpp"
+
+namespace bathwright::desktop {
+namespace {
+
+void draw_ions(const ChemistryView& view, const Look& look) {
+  if (!ImGui::BeginTable("ions", 3, ImGuiTableFlags_SizingStretchProp)) return;
+  for (const auto& [name, weight] : {std::pair{"ion", 1.3F}, {"mol/kg", 1.6F}, {"activity", 0.9F}})
+    ImGui::TableSetupColumn(name, 0, weight);
+  ImGui::PushFont(look.fonts.caption);
+  ImGui::TableHeadersRow();
+  for (const IonRow& ion : view.ions) {
+    ImGui::TableNextRow();
+    ImGui::TableNextColumn();
+    ImGui::TextUnformatted(ion.name.c_str());
+    ImGui::TableNextColumn();
+    const float width = ImGui::GetContentRegionAvail().x / look.scale,
+                height = ImGui::GetTextLineHeight() / look.scale;
+    const ImVec2 at = ImGui::GetCursorScreenPos();
+    DrawListCanvas canvas(*ImGui::GetWindowDrawList(), look.fonts, at, look.scale);
+    charts::Colour faint = look.palette.accent;
+    faint.alpha = 50;
+    canvas.fill({0, 1, width * ion.share, height - 2}, faint);
+    right_aligned(ion.molality);
+    ImGui::TableNextColumn();
+    right_aligned(ion.activity);
+    if (ImGui::IsItemHovered()) ImGui::SetTooltip("activity coefficient %s", ion.gamma.c_str());
+  }
+  ImGui::PopFont();
+  ImGui::EndTable();
+}
+
+void draw_solids(const ChemistryView& view, const Look& look) {
+  if (view.solids.empty() || !ImGui::BeginTable("solids", 3, ImGuiTableFlags_SizingStretchProp)) return;
+  ImGui::TableSetupColumn("solid", 0, 1.4F);
+  ImGui::TableSetupColumn(view.working_at.c_str(), 0, 1);
+  ImGui::TableSetupColumn(view.idle_at.c_str(), 0, 1);
+  ImGui::PushFont(look.fonts.caption);
+  ImGui::TableHeadersRow();
+  const auto room = [&](const std::string& words, double share) {
+    ImGui::TableNextColumn();
+    const float width = ImGui::GetContentRegionAvail().x / look.scale;
+    DrawListCanvas canvas = drawing_room(look, width, 8);
+    draw_headroom(canvas, {0, 1, width, 6}, share, look.palette);
+    right_aligned(words);
+  };
+  for (const SolidRow& solid : view.solids) {
+    ImGui::TableNextRow();
+    ImGui::TableNextColumn();
+    standing(look, static_cast<int>(solid.forms ? charts::State::stop : charts::State::in_window),
+             solid.name);
+    room(solid.working, solid.working_share);
+    room(solid.idle, solid.idle_share);
+  }
+  ImGui::PopFont();
+  ImGui::EndTable();
+}
+
+}  // namespace
+
+void draw_chemistry(const ChemistryView& view, const Look& look) {
+  heading(look, "The chemistry of it");
+  for (const auto& [name, value] : view.figures) {
+    ImGui::TextUnformatted(name.c_str());
+    ImGui::SameLine();
+    right_aligned(value, look.fonts.bold);
+  }
+  heading(look, "Free ions");
+  draw_ions(view, look);
+  heading(look, "Room before it crystallises");
+  draw_solids(view, look);
+  if (!view.path.empty()) {
+    heading(look, "Along the additions");
+    for (const charts::Chart& chart : view.path) {
+      const float width = ImGui::GetContentRegionAvail().x / look.scale;
+      DrawListCanvas canvas = drawing_room(look, width, 190);
+      charts::draw(chart, canvas, {0, 0, width, 190}, look.palette);
+    }
+  }
+  if (!view.doubts.empty()) {
+    heading(look, "Doubts");
+    for (const std::string& doubt : view.doubts) quiet(look, doubt);
+  }
+}
+
+}  // namespace bathwright::desktop

@@ -1,0 +1,37 @@
+#include "panels.hpp"
+
+namespace bathwright::desktop {
+namespace {
+
+constexpr float width = 44, height = 46;
+
+void draw_tank(const TankOnLine& tank, int index, bool selected, const Look& look, Intents& out) {
+  ImGui::PushID(index);
+  const ImVec2 corner = ImGui::GetCursorPos();
+  const float row = look.px(height + 16);
+  if (ImGui::Selectable("##open", selected, 0, {0, row})) out.emplace_back(OpenTank{index});
+  ImGui::SetCursorPos({corner.x + look.px(8), corner.y + look.px(8)});
+  DrawListCanvas canvas = drawing_room(look, width, height);
+  draw_vessel(canvas, {2, 2, width - 4, height - 4}, tank.vessel, look.palette);
+  ImGui::SameLine(0, look.px(10));
+  ImGui::BeginGroup();
+  bold(look, tank.name);
+  ImGui::PushFont(look.fonts.caption);
+  standing(look, static_cast<int>(tank.state), tank.word);
+  ImGui::PopFont();
+  ImGui::EndGroup();
+  ImGui::SetCursorPos({corner.x, corner.y + row + look.px(2)});
+  ImGui::PopID();
+}
+
+}  // namespace
+
+void draw_line(const LineView& view, const Look& look, Intents& out) {
+  quiet(look, view.shop);
+  heading(look, "The line");
+  for (std::size_t i = 0; i < view.tanks.size(); ++i)
+    draw_tank(view.tanks[i], static_cast<int>(i), static_cast<int>(i) == view.selected, look, out);
+  if (view.tanks.empty()) quiet(look, "No tank files in this folder. Copy one from the demonstration shop.");
+}
+
+}  // namespace bathwright::desktop

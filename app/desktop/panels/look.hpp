@@ -1,0 +1,39 @@
+// What every panel draws with, and the small pieces of text and signs they share.
+#pragma once
+
+#include <imgui.h>
+
+#include <bathwright/charts/palette.hpp>
+#include <string>
+
+#include "../draw/draw_list_canvas.hpp"
+#include "../window/fonts.hpp"
+#include "../window/theme.hpp"
+
+namespace bathwright::desktop {
+
+struct Look {
+  const Fonts& fonts;
+  const charts::Palette& palette;
+  float scale = 1;
+
+  [[nodiscard]] float px(float at_100) const { return at_100 * scale; }
+};
+
+void heading(const Look& look, const std::string& words);  ///< of a card, with a rule to the right edge
+void quiet(const Look& look, const std::string& words);    ///< in quiet ink, wrapped
+void said(const Look& look, charts::Colour colour, const std::string& words);  ///< wrapped
+void bold(const Look& look, const std::string& words);
+/// Ends at the right edge of the cell or region.
+void right_aligned(const std::string& words, ImFont* font = nullptr);
+
+/// A mark and its word; of the normal state the word alone.
+void standing(const Look& look, int state, const std::string& word);
+
+/// Room of this size to draw in; the canvas has its origin at the upper left, lengths at 100 %.
+DrawListCanvas drawing_room(const Look& look, float width_at_100, float height_at_100);
+
+/// The one thing to do next: a button in the accent. Its label may not hold the id of another.
+bool main_button(const Look& look, const char* label, bool ready);
+
+}  // namespace bathwright::desktop

@@ -1,0 +1,21 @@
+// The letters of the desktop: one open sans in four sizes, with Greek, sub- and superscripts.
+#pragma once
+
+#include <imgui.h>
+
+#include <bathwright/base/result.hpp>
+
+namespace bathwright::desktop {
+
+struct Fonts {
+  ImFont *caption = nullptr, *body = nullptr, *bold = nullptr, *heading = nullptr, *large = nullptr;
+};
+
+/// Sizes in pixels at a scale of 1.
+inline constexpr float caption_px = 13, body_px = 15, heading_px = 20, large_px = 28;
+
+/// Loads the font into the current ImGui context at a scale (1 to 2). Fails where the font is not installed
+/// and says what to install.
+Result<Fonts> load_fonts(float scale);
+
+}  // namespace bathwright::desktop
