@@ -3,11 +3,11 @@
 #include <algorithm>
 #include <bathwright/sheets/analysis_sheet.hpp>
 #include <fstream>
-#include <thread>
 
 #include "shared_options.hpp"
 #include "work/dose_document.hpp"
 #include "work/own_plan.hpp"
+#include "work/planning.hpp"
 #include "work/slip.hpp"
 
 namespace bathwright::command {
@@ -40,14 +40,9 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   constexpr std::size_t earlier_results = 3;
   const auto history = history_of(context, shop->tank.name, earlier_results, analysed->logged_as);
   if (!history) return fail(context, history.problems());
-  dosing::Request request;
-  for (const auto& level : analysis.reconciled)
-    request.uncertainty[level.quantity] = level.standard_uncertainty.v;
-  if (options.samples > 0) request.spread = dosing::Spread{.covariance = analysis.covariance};
-  request.sampling = {.samples = options.samples,
-                      .threads = std::max(1u, std::thread::hardware_concurrency())};
   const auto sheet = options.own_plan.empty()
-                         ? dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, request)
+                         ? dosing::plan_additions(shop->tank, shop->chemistry, analysis.state,
+                                                  request_for(analysis, options.samples))
                          : check_own_plan(*shop, analysis.state, options.own_plan);
   if (!sheet) return fail(context, sheet.problems());
   const auto stops = slip_stops(shop->tank, *analysed, *sheet, *history);

@@ -4,6 +4,7 @@
 #include <cstdio>
 
 #include "context.hpp"
+#include "desktop/desktop.hpp"
 #include "log/pins.hpp"
 
 using namespace bathwright::command;
@@ -52,6 +53,8 @@ int main(int argc, char** argv) {
   program.add_option("--log", context.log_file, "the shift log to read and write");
   program.add_option("--plugins", context.plugin_folders, "further folders with bath types")
       ->allow_extra_args(false);
+  std::string shop;
+  program.add_option("--shop", shop, "without a verb: the folder of tank files that the window opens");
   program.require_subcommand(0, 1);
   program.fallthrough();
   add_analyse(program, context, action);
@@ -80,11 +83,8 @@ int main(int argc, char** argv) {
     return program.exit(error) == 0 ? Exit::all_well : Exit::bad_input;
   }
   if (!action) {
-    std::printf(
-        "Bathwright works at the command line in this version; the window comes in a later one.\n\n"
-        "This shift:      bathwright dose TANK READINGS\n"
-        "Every verb:      bathwright --help\n");
-    return Exit::all_well;
+    const auto closed = bathwright::desktop::run(context, shop);
+    return closed ? Exit::all_well : fail(context, closed.problems());
   }
   return action();
 }

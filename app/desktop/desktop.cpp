@@ -1,27 +1,30 @@
 #include "desktop.hpp"
 
-#include "context.hpp"
 #include "model/desk.hpp"
 #include "panels/panels.hpp"
 #include "window/window.hpp"
 
 namespace bathwright::desktop {
 
-int run(const command::Context& context, const std::filesystem::path& folder) {
-  auto opened = Window::open({});
-  if (!opened) return command::fail(context, opened.problems());
+Outcome run(const work::Session& session, const std::filesystem::path& shop) {
+  Desk desk(session, shop, Window::wake);
+  auto opened = Window::open({.scale = desk.settings().scale, .dark = desk.settings().dark});
+  if (!opened) return opened.problems();
   Window window = *std::move(opened);
-  Desk desk(context, folder, Window::wake);
-  desk.view().status.renderer = window.renderer() + (window.software() ? ", drawn in software" : "");
+  desk.drawn_by(window.renderer() + (window.software() ? ", drawn in software" : ""));
   PanelState state;
   Intents intents;
   window.run([&] {
     desk.update();
     intents.clear();
     draw_desk(desk.view(), state, {window.fonts(), palette(window.dark()), window.scale()}, intents);
-    for (const Intent& intent : intents) desk.handle(intent);
+    for (const Intent& intent : intents) {
+      desk.handle(intent);
+      if (const auto* look = std::get_if<SetLook>(&intent)) window.set_look(look->scale, look->dark);
+    }
+    if (!intents.empty()) Window::wake();
   });
-  return command::Exit::all_well;
+  return Done{};
 }
 
 }  // namespace bathwright::desktop

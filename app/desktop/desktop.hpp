@@ -1,16 +1,16 @@
-// The desktop: the window over a folder of tanks.
+// The desktop: the window over a shop's folder of tanks.
 #pragma once
 
+#include <bathwright/base/result.hpp>
 #include <filesystem>
 
-namespace bathwright::command {
-struct Context;
-}
+#include "work/session.hpp"
 
 namespace bathwright::desktop {
 
-/// Opens the window and works until it is closed. Returns the exit status; where no window can be opened it
-/// says what to do at the command line instead.
-int run(const command::Context& context, const std::filesystem::path& folder);
+/// Opens the window and works until it is closed. `shop`: a folder of tank files; empty: the one of last
+/// time, else the first start. Fails (io) where no window can be opened, and says what to do at the command
+/// line instead.
+Outcome run(const work::Session& session, const std::filesystem::path& shop);
 
 }  // namespace bathwright::desktop

@@ -13,6 +13,7 @@ Json json_of(const bath::BathType& type, const dosing::Step& step) {
                       {"detail", check.detail}});
   return {{"number", step.number},
           {"chemical", step.chemical},
+          {"name", step.name},
           {"amount", step.amount},
           {"unit", step.unit},
           {"portion", step.portion},

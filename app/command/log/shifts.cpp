@@ -8,6 +8,7 @@
 
 #include "shared_options.hpp"
 #include "verbs.hpp"
+#include "work/hand_over_document.hpp"
 
 namespace bathwright::command::log_verb {
 namespace {
@@ -90,35 +91,6 @@ int set_shifts(const Context& context, const ShiftOptions& options) {
   return tell(context, append_to_log(context, std::move(entry)));
 }
 
-Json json_of(const hand_over::HandOver& told) {
-  Json doc = document({});
-  doc["shift"] = {{"label", told.shift.label},
-                  {"from", logbook::iso_utc(told.shift.from)},
-                  {"to", logbook::iso_utc(told.shift.to)}};
-  for (const auto& [key, entries] :
-       {std::pair{"entries", &told.entries}, std::pair{"open_slips", &told.open_slips}}) {
-    doc[key] = Json::array();
-    for (const auto& entry : *entries) doc[key].push_back(entry.seq);
-  }
-  doc["out_of_window"] = Json::array();
-  for (const auto& one : told.out_of_window)
-    doc["out_of_window"].push_back({{"tank", one.tank},
-                                    {"quantity", one.quantity},
-                                    {"found", one.found},
-                                    {"low", one.low},
-                                    {"high", one.high},
-                                    {"seq", one.seq}});
-  doc["due"] = Json::array();
-  for (const auto& one : told.due)
-    doc["due"].push_back({{"tank", one.tank},
-                          {"what", one.what},
-                          {"at", logbook::iso_utc(one.at)},
-                          {"last", one.last ? Json(logbook::iso_utc(*one.last)) : Json(nullptr)},
-                          {"overdue", one.overdue}});
-  doc["head"] = told.head ? Json{{"seq", told.head->seq}, {"hash", told.head->hash}} : Json(nullptr);
-  return doc;
-}
-
 Result<shifts::ShiftSpan> shift_to_hand_over(const shifts::Calendar& calendar, const std::string& label,
                                              logbook::UtcTime now) {
   if (label.empty()) return hand_over::latest_shift(calendar, now);
@@ -153,7 +125,7 @@ int hand_over_verb(const Context& context, const std::vector<std::string>& tank_
   if (!shift) return fail(context, shift.problems());
   const auto told = hand_over::hand_over(*log, **calendar, *shift, tanks, now);
   if (!told) return fail(context, told.problems());
-  Json doc = json_of(*told);
+  Json doc = hand_over_document(*told);
   sheets::Lines lines = sheets::hand_over_sheet(*told, **calendar, signer(context));
   if (log_it) {
     logbook::NewEntry entry;

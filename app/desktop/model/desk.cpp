@@ -1,15 +1,21 @@
 #include "desk.hpp"
 
 #include <algorithm>
+#include <array>
+#include <bathwright/charts/page_file.hpp>
 #include <bathwright/sheets/names.hpp>
-#include <bathwright/shopfiles/tank_file.hpp>
+#include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
 #include <ctime>
-#include <fstream>
 
-#include "user_folders.hpp"
-#include "view_json.hpp"
 #include "views.hpp"
+#include "whole_file.hpp"
+#include "work/constants.hpp"
+#include "work/demonstration.hpp"
+#include "work/dose_document.hpp"
+#include "work/hand_over_document.hpp"
+#include "work/slip.hpp"
+#include "work/user_folders.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -23,132 +29,214 @@ std::string local_now() {
   return std::strftime(text.data(), text.size(), "%Y-%m-%dT%H:%M:%S", &parts) > 0 ? text.data() : "";
 }
 
-/// The first word of a tank's name, "N-07", and the rest.
-std::pair<std::string, std::string> split(const std::string& name) {
-  const std::size_t space = name.find(' ');
-  return {name.substr(0, space), space == std::string::npos ? "" : name.substr(space + 1)};
-}
-
 bool nothing_typed(const Draft& draft) {
   return std::ranges::all_of(draft.rows, [](const DraftRow& row) { return row.is_empty(); });
 }
 
+std::filesystem::path settings_file() { return work::state_folder() / "desktop.json"; }
+
+int index_of(const std::vector<std::string>& all, const std::string& one) {
+  const auto found = std::ranges::find(all, one);
+  return found == all.end() ? 0 : static_cast<int>(found - all.begin());
+}
+
+template <class... Cases>
+struct Overloaded : Cases... {
+  using Cases::operator()...;
+};
+
 }  // namespace
 
-Desk::Desk(command::Context context, std::filesystem::path folder, std::function<void()> wake)
-    : context_(std::move(context)),
-      folder_(std::move(folder)),
-      job_(
-          [work = std::make_shared<TankWork>()](const Question& question, const std::stop_token& stop) {
-            return work->answer(question, stop);
-          },
-          std::move(wake)) {
-  find_tanks();
-  show_line();
-  if (!tanks_.empty()) open(0);
+Desk::Desk(work::Session session, const std::filesystem::path& shop, std::function<void()> wake)
+    : session_(std::move(session)),
+      given_log_(session_.log_file),
+      wake_(std::move(wake)),
+      settings_(kept_settings(settings_file())),
+      units_(settings_),
+      signing_(wake_),
+      tank_job_(
+          [work = std::make_shared<TankWork>()](const Question& question, const std::stop_token& stop,
+                                                const auto& give) { work->answer(question, stop, give); },
+          wake_),
+      log_job_([](const LogQuestion& question, const std::stop_token&,
+                  const auto& give) { give(read_log(question)); },
+               wake_),
+      forecast_job_([this](const ForecastQuestion& question, const std::stop_token& stop,
+                           const auto& give) { forecast_work_.answer(question, stop, give); },
+                    wake_) {
+  const std::filesystem::path& folder = shop.empty() ? settings_.shop : shop;
+  if (!folder.empty()) open_shop(folder, !shop.empty());
   show();
 }
 
-void Desk::find_tanks() {
-  std::error_code failed;
-  for (const auto& entry : std::filesystem::directory_iterator(folder_, failed)) {
-    if (entry.path().extension() != ".toml") continue;
-    if (auto tank = shopfiles::read_tank(entry.path().string(), matter::StockCatalogue::built_in()))
-      tanks_.push_back({entry.path(), *std::move(tank)});
-  }
-  std::ranges::sort(tanks_, {}, [](const TankFile& file) { return file.tank.name; });
-  if (tanks_.empty())
-    view_.empty = "No tank is in " + folder_.string() +
-                  ". Start with the folder of a shop: bathwright FOLDER; the demonstration shop is in baths.";
+const bath::Tank* Desk::tank() const {
+  return open_ < 0 ? nullptr : &(*shop_.tanks)[static_cast<std::size_t>(open_)];
 }
 
-/// Each tank as its last analysis in the log left it.
-void Desk::show_line() {
-  view_.line.tanks.clear();
-  for (const TankFile& file : tanks_) {
-    TankOnLine shown;
-    std::tie(shown.name, shown.kind) = split(file.tank.name);
-    shown.vessel = {1, file.tank.freeboard.v / file.tank.working_volume.v, false};
-    shown.word = "not analysed";
-    const auto last = command::last_analysis(context_, file.tank.name);
-    if (last && *last) {
-      shown.vessel.level = (*last)->volume.v / file.tank.working_volume.v;
-      shown.vessel.level_known = true;
-      shown.word = "in window";
-      for (const auto& level : (*last)->document.value("levels", command::Json::array())) {
-        const std::string state = level.value("state", "");
-        if (state == "stop") {
-          shown.state = charts::State::stop;
-          shown.word = "stop: " + sheets::pretty(level.value("quantity", ""));
-          break;
-        }
-        if (state.ends_with("window") && state != "in window") {
-          shown.state = charts::State::act;
-          shown.word = "add this shift";
-        }
-      }
-    }
-    view_.line.tanks.push_back(std::move(shown));
-    view_.line.shop = file.tank.shop;
+bool Desk::working() const {
+  return tank_job_.working() || log_job_.working() || forecast_job_.working() || signing_.busy();
+}
+
+HeadUnits Desk::head_units() const {
+  return {settings_.volume, settings_.temperature == "°F" ? "degF" : "degC", units_.concentration()};
+}
+
+void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
+  auto shop = read_shop(folder);
+  if (!shop) {
+    fault_ = text(shop.problems());
+    return;
   }
-  view_.line.selected = open_;
+  shop_ = *std::move(shop);
+  fault_ = text(shop_.problems);
+  // The demonstration has a log of its own: what is tried on it never stands between a real shop's entries.
+  session_.log_file = given_log_;
+  if (given_log_.empty())
+    session_.log_file = (folder == work::data_folder() / "demonstration" ? folder / "shift-log.sqlite"
+                                                                         : work::log_path(session_))
+                            .string();
+  if (keep_it) {
+    settings_.shop = std::filesystem::absolute(folder);
+    settings_changed();
+  }
+  log_ = {};
+  open_tank(0);
 }
 
 std::filesystem::path Desk::draft_file() const {
-  return command::state_folder() / "typing" /
-         tanks_[static_cast<std::size_t>(open_)].path.stem().concat(".json");
+  return work::state_folder() / "typing" / (tank()->name + ".json");
 }
 
-void Desk::open(int tank) {
-  if (tank < 0 || tank >= static_cast<int>(tanks_.size())) return;
+void Desk::open_tank(int tank) {
+  if (!shop_.tanks || tank < 0 || tank >= static_cast<int>(shop_.tanks->size())) return;
   open_ = tank;
-  view_.line.selected = tank;
   worked_.reset();
   draft_.reset();
   edited_.clear();
   plan_ = 0;
-  fault_.clear();
-  changed_ = true;
+  said_.clear();
+  policies_ = shop_.policies(static_cast<std::size_t>(tank));
+  policy_ = 0;
+  levers_.reset();
+  forecasted_.reset();
   ask();
+  ask_log();
+  if (view_.page == PageName::forecast) ask_forecast();
 }
 
 void Desk::handle(const Intent& intent) {
   changed_ = true;
   std::visit(
-      [this](const auto& asked) {
-        using Asked = std::decay_t<decltype(asked)>;
-        if constexpr (std::is_same_v<Asked, OpenTank>) {
-          if (asked.tank != open_) open(asked.tank);
-        } else if constexpr (std::is_same_v<Asked, TypeReading>) {
-          if (draft_) draft_->type(asked), draft_changed();
-        } else if constexpr (std::is_same_v<Asked, ChooseMethod>) {
-          if (draft_) draft_->choose(asked), draft_changed();
-        } else if constexpr (std::is_same_v<Asked, UndoTyping>) {
-          if (draft_) draft_->undo(), draft_changed();
-        } else if constexpr (std::is_same_v<Asked, RedoTyping>) {
-          if (draft_) draft_->redo(), draft_changed();
-        } else if constexpr (std::is_same_v<Asked, ChoosePlan>) {
-          plan_ = asked.plan;
-          edited_.clear();
-          ask();
-        } else if constexpr (std::is_same_v<Asked, BackToPlan>) {
-          edited_.clear();
-          ask();
-        } else if constexpr (std::is_same_v<Asked, DragAmount>) {
-          if (!worked_ || !worked_->sheet || worked_->sheet->plans.empty()) return;
-          const auto& plans = worked_->sheet->plans;
-          const auto& additions =
-              plans[std::min(static_cast<std::size_t>(plan_), plans.size() - 1)].additions;
-          if (asked.addition < 0 || asked.addition >= static_cast<int>(additions.size())) return;
-          if (edited_.empty())
-            for (const auto& addition : additions) edited_.emplace_back(addition.chemical, addition.kg);
-          const auto& addition = additions[static_cast<std::size_t>(asked.addition)];
-          edited_[static_cast<std::size_t>(asked.addition)].second =
-              addition.amount > 0 ? asked.amount * addition.kg / addition.amount : 0;
-          ask();
-        }
-      },
+      Overloaded{[&](const GoTo& to) {
+                   view_.page = to.page;
+                   fault_.clear();
+                   if (to.page == PageName::forecast && !forecasted_) ask_forecast();
+                   if (to.page == PageName::bath_types) list_bath_types();
+                 },
+                 [&](const OpenTank& open) {
+                   fault_.clear();
+                   if (open.tank != open_) open_tank(open.tank);
+                 },
+                 [&](const TypeReading& typed) {
+                   if (draft_) draft_->type(typed, local_now()), draft_changed();
+                 },
+                 [&](const ChooseMethod& chosen) {
+                   if (draft_) draft_->choose(chosen), draft_changed();
+                 },
+                 [&](const UndoTyping&) {
+                   if (draft_) draft_->undo(), draft_changed();
+                 },
+                 [&](const RedoTyping&) {
+                   if (draft_) draft_->redo(), draft_changed();
+                 },
+                 [&](const NewSample&) {
+                   if (draft_) draft_->start_again(blank_), draft_changed();
+                 },
+                 [&](const ChoosePlan& chosen) {
+                   plan_ = chosen.plan;
+                   edited_.clear();
+                   ask();
+                 },
+                 [&](const DragAmount& dragged) { drag(dragged); },
+                 [&](const AddChemical& added) { add_chemical(added.chemical); },
+                 [&](const BackToPlan&) {
+                   edited_.clear();
+                   ask();
+                 },
+                 [&](const LogAnalysis& asked) { log_analysis(asked.names); },
+                 [&](const IssueSlip& asked) { issue_slip(asked.names); },
+                 [&](const StepDone& asked) {
+                   if (log_.slip) log_entry(work::step_done(*log_.slip, asked.step), asked.names);
+                 },
+                 [&](const ApproveSlip& asked) {
+                   if (log_.slip) log_entry(work::approval(*log_.slip), asked.names);
+                 },
+                 [&](const CloseSlip& asked) {
+                   if (log_.slip)
+                     log_entry(work::closing(*log_.slip, asked.cancelled, asked.reason), asked.names);
+                 },
+                 [&](const HandOver& asked) { hand_over(asked.names); },
+                 [&](const SetShifts& asked) { set_shifts(asked); },
+                 [&](const AdmitPerson& asked) { admit(asked); },
+                 [&](const ChoosePolicy& chosen) {
+                   policy_ = chosen.policy;
+                   levers_.reset();
+                   ask_forecast();
+                 },
+                 [&](const MoveLever& lever) {
+                   if (!forecasted_) return;
+                   Levers levers = levers_.value_or(forecasted_->levers);
+                   if (lever.lever == 0) levers.bleed_L_per_day = std::max(0.0, lever.value);
+                   if (lever.lever == 1) levers.drag_out = std::max(0.0, lever.value);
+                   if (lever.lever == 2) levers.load = std::max(0.0, lever.value);
+                   if (lever.lever == 3) levers.horizon_days = std::max(1, static_cast<int>(lever.value));
+                   levers_ = levers;
+                   ask_forecast();
+                 },
+                 [&](const StopSampling&) { forecast_job_.stop(); },
+                 [&](const FilterLog& filter) {
+                   filter_ = filter.text;
+                   ask_log();
+                 },
+                 [&](const ShowEntry& entry) {
+                   shown_entry_ = entry.seq;
+                   ask_log();
+                 },
+                 [&](const AskSource& asked) {
+                   std::vector<std::string> names;
+                   view_.source.species = asked.species;
+                   view_.source.text =
+                       work::sources_sheet(asked.species, work::constants_about(asked.species, names));
+                 },
+                 [&](const SaveSheet& asked) { save(asked); },
+                 [&](const OpenFolder& asked) { open_shop(asked.folder, true); },
+                 [&](const OpenDemonstration&) {
+                   if (const auto folder = work::demonstration_shop())
+                     open_shop(*folder, true);
+                   else
+                     fault_ = text(folder.problems());
+                 },
+                 [&](const SetLook& look) {
+                   settings_.scale = look.scale;
+                   settings_.dark = look.dark;
+                   settings_changed();
+                 },
+                 [&](const SetUnits& chosen) {
+                   const auto at = [](const std::vector<std::string>& all, int i) {
+                     return all[static_cast<std::size_t>(std::clamp(i, 0, static_cast<int>(all.size()) - 1))];
+                   };
+                   settings_.concentration = at(Units::concentrations(), chosen.concentration);
+                   settings_.volume = at(Units::volumes(), chosen.volume);
+                   settings_.temperature = at(Units::temperatures(), chosen.temperature);
+                   units_ = Units(settings_);
+                   settings_changed();
+                   ask();
+                 }},
       intent);
+}
+
+void Desk::settings_changed() {
+  if (const Outcome kept = keep(settings_file(), settings_); !kept) fault_ = text(kept.problems());
 }
 
 void Desk::draft_changed() {
@@ -158,29 +246,225 @@ void Desk::draft_changed() {
   ask();
 }
 
+/// The plan that is shown becomes a list of the person's own.
+void Desk::begin_edit() {
+  if (!edited_.empty() || !worked_ || !worked_->sheet || worked_->sheet->plans.empty()) return;
+  const auto& plans = worked_->sheet->plans;
+  for (const auto& addition : plans[std::min(static_cast<std::size_t>(plan_), plans.size() - 1)].additions)
+    edited_.emplace_back(addition.chemical, addition.kg);
+}
+
+void Desk::drag(const DragAmount& drag) {
+  if (!worked_ || !worked_->sheet || drag.amount < 0) return;
+  begin_edit();
+  if (drag.addition < 0 || drag.addition >= static_cast<int>(edited_.size())) return;
+  auto& [id, kg] = edited_[static_cast<std::size_t>(drag.addition)];
+  const bath::ShelfItem* item = tank()->on_shelf(id);
+  if (!item) return;
+  kg = item->stock.liquid ? drag.amount * item->stock.kg_per_L : drag.amount;
+  ask();
+}
+
+void Desk::add_chemical(const std::string& chemical) {
+  const bath::Tank* open = tank();
+  if (!open || !open->on_shelf(chemical) || !worked_ || !worked_->sheet) return;
+  begin_edit();
+  constexpr double first_kg = 1;  // something to drag from
+  edited_.emplace_back(chemical, first_kg);
+  ask();
+}
+
 void Desk::ask() {
   if (open_ < 0) return;
-  Question question{context_, tanks_[static_cast<std::size_t>(open_)].path, {}, edited_, plan_};
+  Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, edited_, plan_, log_.last};
   if (draft_ && !nothing_typed(draft_->now())) {
     const std::filesystem::path file = draft_file().replace_extension(".toml");
-    std::ofstream(file, std::ios::binary) << readings_text(draft_->now(), local_now(), line_of_row_);
+    if (const Outcome written = write_whole(file, readings_text(draft_->now(), head_units(), line_of_row_));
+        !written) {
+      fault_ = text(written.problems());
+      return;
+    }
     question.readings_file = file;
   }
-  job_.ask(std::move(question));
+  tank_job_.ask(std::move(question));
+}
+
+void Desk::ask_log() {
+  if (const bath::Tank* open = tank())
+    log_job_.ask({session_, shop_.tanks, open->name, filter_, shown_entry_});
+}
+
+void Desk::ask_forecast() {
+  if (open_ < 0 || policies_.empty()) return;
+  const auto policy = std::min(static_cast<std::size_t>(policy_), policies_.size() - 1);
+  std::filesystem::path readings;
+  if (worked_ && worked_->analysed) readings = worked_->readings_file;
+  forecast_job_.ask(
+      {session_, shop_.files[static_cast<std::size_t>(open_)], readings, policies_[policy], levers_});
+}
+
+void Desk::list_bath_types() {
+  view_.bath_types.clear();
+  const auto types = work::known_bath_types(session_);
+  for (const auto& listed : types.list()) {
+    BathTypeRow row{listed.id,
+                    listed.version,
+                    std::string(plugin_host::name(listed.state)),
+                    listed.path.filename().string(),
+                    "",
+                    charts::State::in_window};
+    if (row.id.empty()) row.id = listed.path.stem().stem().string();
+    if (listed.state != plugin_host::State::ready)
+      row.mark = listed.state == plugin_host::State::shadowed ? charts::State::act : charts::State::stop;
+    for (const Problem& problem : listed.problems) row.why += (row.why.empty() ? "" : " ") + problem.text();
+    view_.bath_types.push_back(std::move(row));
+  }
+}
+
+void Desk::log_analysis(const Names& names) {
+  if (!worked_ || !worked_->analysed || !worked_->shop) return;
+  said_.clear();
+  signing_.start([session = signed_by(session_, names), worked = *worked_]() -> Result<std::string> {
+    auto entry = work::entry_computed(
+        *worked.shop, worked.readings_file.string(), logbook::EntryKind::analysis,
+        work::analysis_document(worked.shop->tank, worked.shop->chemistry, worked.analysed->analysis));
+    if (!entry) return entry.problems();
+    const auto logged = work::append_to_log(session, *std::move(entry));
+    if (!logged) return logged.problems();
+    return work::words(*logged);
+  });
+}
+
+void Desk::issue_slip(const Names& names) {
+  if (!worked_ || !worked_->analysed || !worked_->sheet || !shown_plan(*worked_, plan_)) return;
+  said_.clear();
+  signing_.start([session = signed_by(session_, names), worked = *worked_,
+                  plan = plan_]() -> Result<std::string> {
+    // The log may have gone on since the readings were worked out.
+    const auto fresh = work::analyse(session, *worked.shop, worked.readings_file.string());
+    if (!fresh) return fresh.problems();
+    dosing::AdditionSheet sheet = worked.own ? *worked.own : *worked.sheet;
+    if (!worked.own)
+      std::swap(sheet.plans.front(),
+                sheet.plans[std::min(static_cast<std::size_t>(plan), sheet.plans.size() - 1)]);
+    constexpr std::size_t earlier_results = 3;
+    const auto history = work::history_of(session, worked.shop->tank.name, earlier_results, fresh->logged_as);
+    if (!history) return history.problems();
+    const auto stops = work::slip_stops(worked.shop->tank, *fresh, sheet, *history);
+    if (const std::string why = work::hindrance(sheet, *fresh, stops); !why.empty())
+      return Problem{Fault::refused, "slip", "none is issued: " + why, "", "Settle that first."};
+    work::Json doc = work::dose_document(*worked.shop, sheet, fresh->changed_since);
+    doc["stops"] = stops;
+    const auto logged =
+        work::log_dose(session, *worked.shop, worked.readings_file.string(), *fresh, doc, true);
+    if (!logged) return logged.problems();
+    return "Slip " + std::to_string(*logged->slip) + " is issued, in " + logged->path.string() + ".";
+  });
+}
+
+void Desk::log_entry(Result<logbook::NewEntry> entry, const Names& names) {
+  said_.clear();
+  if (!entry) {
+    fault_ = text(entry.problems());
+    return;
+  }
+  fault_.clear();
+  signing_.start([session = signed_by(session_, names), entry = *std::move(entry)]() -> Result<std::string> {
+    const auto logged = work::append_to_log(session, entry);
+    if (!logged) return logged.problems();
+    return work::words(*logged);
+  });
+}
+
+void Desk::admit(const AdmitPerson& asked) {
+  said_.clear();
+  signing_.start([session = signed_by(session_, asked.names), asked]() -> Result<std::string> {
+    const auto role = logbook::role_of(asked.role);
+    if (!role) return role.problems();
+    auto open = work::open_log_to_write(session);
+    if (!open) return open.problems();
+    const auto signatures = work::signatures_for(session, open->log);
+    if (!signatures) return signatures.problems();
+    const auto entry = work::OpenLog(*std::move(open)).log.admit(asked.name, *role, asked.pin, *signatures);
+    if (!entry) return entry.problems();
+    return asked.name + " may sign now: entry " + std::to_string(entry->seq) + ".";
+  });
+}
+
+void Desk::set_shifts(const SetShifts& set) {
+  const auto pattern = shifts::ready_made(set.pattern, set.zone);
+  const auto calendar =
+      pattern ? shifts::Calendar::of(*pattern) : Result<shifts::Calendar>(pattern.problems());
+  if (!calendar) {
+    fault_ = text(calendar.problems());
+    return;
+  }
+  logbook::NewEntry entry;
+  entry.kind = logbook::EntryKind::setting;
+  entry.body = work::Json{{"shifts", work::Json::parse(shifts::to_json(*pattern))}}.dump();
+  log_entry(std::move(entry), set.names);
+}
+
+void Desk::hand_over(const Names& names) {
+  if (!log_.told) {
+    fault_ = "No shifts are set: Settings has them.";
+    return;
+  }
+  logbook::NewEntry entry;
+  entry.kind = logbook::EntryKind::hand_over;
+  entry.body = work::text_of(work::hand_over_document(*log_.told));
+  log_entry(std::move(entry), names);
+}
+
+void Desk::save(const SaveSheet& asked) {
+  fault_.clear();
+  Outcome saved =
+      Problem{Fault::bad_input, asked.file, "there is nothing to save yet", "", "Work it out first."};
+  if (asked.sheet == Sheet::forecast && forecasted_ && !forecasted_->page.charts.empty())
+    saved = charts::write_page(asked.file, forecasted_->page);
+  if (saved)
+    said_ = "Saved as " + asked.file + ".";
+  else
+    fault_ = text(saved.problems());
 }
 
 bool Desk::update() {
-  if (auto answer = job_.take()) {
+  if (auto answer = tank_job_.take()) {
     changed_ = true;
-    worked_ = std::move(answer);
-    if (worked_->shop && !draft_) {
-      blank_ = blank_draft(worked_->shop->tank, worked_->shop->type());
-      auto kept = kept_draft(draft_file(), blank_);
-      if (!kept) fault_ = text(kept.problems());
-      draft_.emplace(kept && *kept ? **kept : blank_);
-      if (!nothing_typed(draft_->now())) ask();
+    if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)]) {
+      worked_ = std::move(answer);
+      if (worked_->shop && !draft_) {
+        blank_ = blank_draft(worked_->shop->tank, worked_->shop->type());
+        auto kept = kept_draft(draft_file(), blank_);
+        if (!kept) fault_ = text(kept.problems());
+        draft_.emplace(kept && *kept ? **kept : blank_);
+        if (!nothing_typed(draft_->now())) ask();
+      }
     }
   }
+  if (auto answer = log_job_.take()) {
+    changed_ = true;
+    const bool went_on = answer->last != log_.last;
+    log_ = *std::move(answer);
+    if (went_on) ask();
+  }
+  if (auto answer = forecast_job_.take()) {
+    changed_ = true;
+    forecasted_ = std::move(answer);
+  }
+  if (auto came = signing_.take()) {
+    changed_ = true;
+    if (*came) {
+      said_ = **came;
+      fault_.clear();
+    } else {
+      fault_ = text(came->problems());
+    }
+    ask_log();
+  }
+  const double progress = forecast_job_.working() ? forecast_work_.progress() : 0;
+  if (progress != view_.forecast.progress) changed_ = true;
+  if (working() != !view_.status.doing.empty()) changed_ = true;
   if (!changed_) return false;
   changed_ = false;
   show();
@@ -188,24 +472,74 @@ bool Desk::update() {
 }
 
 void Desk::show() {
+  view_.first_start = open_ < 0;
+  view_.fault = fault_;
+  view_.settings = {settings_.shop.string(),
+                    session_.log_file,
+                    Units::concentrations(),
+                    Units::volumes(),
+                    Units::temperatures(),
+                    index_of(Units::concentrations(), settings_.concentration),
+                    index_of(Units::volumes(), settings_.volume),
+                    index_of(Units::temperatures(), settings_.temperature),
+                    settings_.scale,
+                    settings_.dark,
+                    ""};
   if (open_ < 0) return;
-  const bath::Tank& tank = tanks_[static_cast<std::size_t>(open_)].tank;
-  view_.tank_title = tank.name;
-  view_.tank_sub = units::significant(tank.working_volume.v, 4) + " L at the mark, " +
-                   units::significant(tank.temperature.v, 3) + " °C at work, " +
-                   units::significant(tank.idle_temperature.v, 3) + " °C at rest";
+  view_.status.doing = signing_.busy()           ? "signing ..."
+                       : forecast_job_.working() ? "forecasting ..."
+                       : tank_job_.working()     ? "working out ..."
+                       : log_job_.working()      ? "reading the log ..."
+                                                 : "";
+  view_.status.log = "log: " + session_.log_file;
+  view_.line = line_view(shop_, log_, open_);
+  view_.tank_title = tank()->name;
+  view_.tank_sub = units_.volume(tank()->working_volume.v) + " at the mark, " +
+                   units_.temperature(tank()->temperature.v) + " at work, " +
+                   units_.temperature(tank()->idle_temperature.v) + " at rest";
   const Worked* worked = worked_ ? &*worked_ : nullptr;
-  view_.readings = draft_ ? readings_view(draft_->now(), line_of_row_, worked) : ReadingsView{};
+  view_.readings = draft_ ? readings_view(draft_->now(), line_of_row_, worked, units_) : ReadingsView{};
   view_.readings.can_undo = draft_ && draft_->can_undo();
   view_.readings.can_redo = draft_ && draft_->can_redo();
-  view_.readings.working = job_.working();
+  view_.readings.working = tank_job_.working();
+  view_.readings.units = {settings_.volume, settings_.temperature, units_.concentration()};
   if (!draft_ && worked)
     for (const Problem& problem : worked->problems) view_.readings.faults.push_back(problem.text());
-  if (!fault_.empty()) view_.readings.faults.push_back(fault_);
-  view_.state = worked ? state_view(*worked, shown_plan(*worked, plan_)) : StateView{};
-  view_.additions = worked ? additions_view(*worked, plan_, edited_) : AdditionsView{};
-  view_.additions.working = job_.working();
-  view_.chemistry = worked ? chemistry_view(*worked) : ChemistryView{};
+  view_.state = worked ? state_view(*worked, shown_plan(*worked, plan_), units_) : StateView{};
+  view_.additions = worked ? additions_view(*worked, plan_, edited_, units_) : AdditionsView{};
+  view_.additions.working = tank_job_.working();
+  view_.chemistry = worked ? chemistry_view(*worked, units_) : ChemistryView{};
+  view_.slip = slip_view(log_.slip, log_.calendar);
+  view_.sign = {work::signer(session_),
+                session_.log_file,
+                fault_,
+                said_,
+                {},
+                worked && worked->analysed && worked->problems.empty(),
+                signing_.busy(),
+                worked && worked->analysed && worked->analysed->logged_as.has_value()};
+  view_.people.clear();
+  for (const logbook::Person& person : log_.people) {
+    if (person.active) view_.sign.people.push_back(person.name);
+    view_.people.push_back(
+        {person.name, std::string(logbook::name(person.role)), person.active ? "yes" : "no more"});
+  }
+  view_.shift = shift_view(log_, work::wall_clock().utc_now());
+  view_.log = log_view(log_);
+  view_.log.filter = filter_;
+  view_.log.file = session_.log_file;
+  view_.log.shown = shown_entry_;
+  view_.hand_over = {log_.hand_over_text, log_.calendar.has_value()};
+  const double progress = forecast_job_.working() ? forecast_work_.progress() : 0;
+  view_.forecast = forecasted_ ? forecast_view(*forecasted_, units_) : ForecastView{};
+  if (policies_.empty())
+    view_.forecast.empty =
+        "No policy of this tank is in the folder policies: copy one from the demonstration shop and "
+        "enter how the tank is run.";
+  for (const auto& policy : policies_) view_.forecast.policies.push_back(policy.filename().string());
+  view_.forecast.policy = policy_;
+  view_.forecast.working = forecast_job_.working();
+  view_.forecast.progress = progress;
 }
 
 }  // namespace bathwright::desktop

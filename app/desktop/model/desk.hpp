@@ -1,45 +1,68 @@
-// Everything the window stands for, without a window: the tanks of a folder, the one that is open, what is
-// typed and changed, what was worked out. One thread, the picture's, calls it; work is done on others.
+// Everything the window stands for, without a window: the tanks of a shop, the one that is open, what is
+// typed and changed, what was worked out and logged. One thread, the picture's, calls it; work is done on
+// others.
 #pragma once
 
 #include "../panels/intent.hpp"
 #include "../panels/view.hpp"
+#include "forecast_work.hpp"
 #include "latest_job.hpp"
+#include "log_work.hpp"
 #include "reading_draft.hpp"
+#include "settings.hpp"
+#include "shop_folder.hpp"
+#include "signing.hpp"
 #include "tank_work.hpp"
+#include "units.hpp"
 
 namespace bathwright::desktop {
 
 class Desk {
  public:
-  /// The tanks are the tank files of `folder`; `wake` is called from other threads when something has
-  /// changed.
-  Desk(command::Context context, std::filesystem::path folder, std::function<void()> wake);
+  /// `shop`: the folder to open; empty: the one kept from last time, else the first start. `wake` is called
+  /// from other threads when something has changed.
+  Desk(work::Session session, const std::filesystem::path& shop, std::function<void()> wake);
 
   void handle(const Intent& intent);
   /// Takes what was worked out since; true where the view has changed.
   bool update();
   [[nodiscard]] const DeskView& view() const { return view_; }
-  [[nodiscard]] DeskView& view() { return view_; }
-  [[nodiscard]] bool working() const { return job_.working(); }
+  [[nodiscard]] const Settings& settings() const { return settings_; }
+  /// "llvmpipe, drawn in software", for the status line.
+  void drawn_by(std::string renderer) { view_.status.renderer = std::move(renderer); }
+  /// Something is being worked out, read or signed.
+  [[nodiscard]] bool working() const;
 
  private:
-  struct TankFile {
-    std::filesystem::path path;
-    bath::Tank tank;
-  };
-
-  void find_tanks();
-  void show_line();
-  void open(int tank);
+  void open_shop(const std::filesystem::path& folder, bool keep_it);
+  void open_tank(int tank);
   void draft_changed();
+  void drag(const DragAmount& drag);
+  void add_chemical(const std::string& chemical);
+  void begin_edit();
   void ask();
+  void ask_log();
+  void ask_forecast();
+  void list_bath_types();
+  void log_analysis(const Names& names);
+  void issue_slip(const Names& names);
+  void log_entry(Result<logbook::NewEntry> entry, const Names& names);
+  void admit(const AdmitPerson& admit);
+  void set_shifts(const SetShifts& set);
+  void hand_over(const Names& names);
+  void save(const SaveSheet& save);
+  void settings_changed();
   void show();
   [[nodiscard]] std::filesystem::path draft_file() const;
+  [[nodiscard]] const bath::Tank* tank() const;
+  [[nodiscard]] HeadUnits head_units() const;
 
-  command::Context context_;
-  std::filesystem::path folder_;
-  std::vector<TankFile> tanks_;
+  work::Session session_;
+  std::string given_log_;  ///< --log; empty: the shop's usual one
+  std::function<void()> wake_;
+  Settings settings_;
+  Units units_;
+  ShopFolder shop_;
   int open_ = -1;
   std::optional<DraftHistory> draft_;
   Draft blank_;
@@ -47,10 +70,21 @@ class Desk {
   int plan_ = 0;
   std::vector<std::pair<std::string, double>> edited_;  ///< stock id, kg
   std::optional<Worked> worked_;
-  std::string fault_;
+  LogNow log_;
+  std::string filter_, fault_, said_;
+  std::int64_t shown_entry_ = 0;
+  std::vector<std::filesystem::path> policies_;
+  int policy_ = 0;
+  std::optional<Levers> levers_;
+  std::optional<Forecasted> forecasted_;
   DeskView view_;
   bool changed_ = true;
-  LatestJob<Question, Worked> job_;  // last: its thread uses nothing of the above
+  Signing signing_;
+  ForecastWork forecast_work_;
+  // Last: their threads use the works above and nothing else.
+  LatestJob<Question, Worked> tank_job_;
+  LatestJob<LogQuestion, LogNow> log_job_;
+  LatestJob<ForecastQuestion, Forecasted> forecast_job_;
 };
 
 }  // namespace bathwright::desktop

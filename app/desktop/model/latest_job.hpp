@@ -7,15 +7,20 @@
 #include <optional>
 #include <stop_token>
 #include <thread>
+#include <utility>
 
 namespace bathwright::desktop {
 
 template <class Question, class Answer>
 class LatestJob {
  public:
+  /// Gives an answer, a better one after a first where there is more to work out.
+  using Give = std::function<void(Answer)>;
+  using Work = std::function<void(const Question&, const std::stop_token&, const Give&)>;
+
   /// `work` runs on the thread and may look at the token to end early: a newer question or the end of the
-  /// program stops it. `done` is called on the thread when an answer waits.
-  LatestJob(std::function<Answer(const Question&, const std::stop_token&)> work, std::function<void()> done)
+  /// program stops it. `done` is called on the thread when an answer waits or the work has ended.
+  LatestJob(Work work, std::function<void()> done)
       : work_(std::move(work)),
         done_(std::move(done)),
         thread_([this](const std::stop_token& end) { run(end); }) {}
@@ -42,7 +47,14 @@ class LatestJob {
     wake_.notify_all();
   }
 
-  /// The answer to the newest question, once.
+  /// Ends what is being worked out; what was given so far stays.
+  void stop() {
+    const std::lock_guard lock(mutex_);
+    asked_.reset();
+    stop_current_.request_stop();
+  }
+
+  /// The newest answer to the newest question, once.
   [[nodiscard]] std::optional<Answer> take() {
     const std::lock_guard lock(mutex_);
     return std::exchange(answer_, std::nullopt);
@@ -67,19 +79,23 @@ class LatestJob {
         stop = stop_current_.get_token();
         busy_ = true;
       }
-      Answer answer = work_(*question, stop);
-      bool newest = false;
+      work_(*question, stop, [&](Answer answer) {
+        {
+          const std::lock_guard lock(mutex_);
+          if (asked_ || stop.stop_requested()) return;
+          answer_ = std::move(answer);
+        }
+        done_();
+      });
       {
         const std::lock_guard lock(mutex_);
         busy_ = false;
-        newest = !asked_ && !stop.stop_requested();
-        if (newest) answer_ = std::move(answer);
       }
-      if (newest) done_();
+      done_();
     }
   }
 
-  std::function<Answer(const Question&, const std::stop_token&)> work_;
+  Work work_;
   std::function<void()> done_;
   mutable std::mutex mutex_;
   std::condition_variable wake_;

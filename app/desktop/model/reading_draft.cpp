@@ -8,6 +8,9 @@
 #include <iterator>
 #include <nlohmann/json.hpp>
 #include <system_error>
+#include <tuple>
+
+#include "whole_file.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -15,7 +18,7 @@ namespace {
 using Json = nlohmann::json;
 
 /// A TOML string. What a person types has no use for control signs; they are left out.
-std::string quoted(const std::string& text) {
+std::string in_quotes(const std::string& text) {
   std::string out = "\"";
   for (const char c : text) {
     if (c == '"' || c == '\\') out += '\\';
@@ -30,7 +33,13 @@ std::string number(std::string text) {
   std::erase(text, ' ');
   const bool plain = !text.empty() && text.find_first_not_of("0123456789.-") == std::string::npos;
   // A number TOML would not read stays a text, so that the reader's message names what was typed.
-  return plain && text.front() != '.' && text.back() != '.' ? text : quoted(text);
+  return plain && text.front() != '.' && text.back() != '.' ? text : in_quotes(text);
+}
+
+/// A bare number means the unit its field is headed with; anything else stays as it is typed.
+std::string with_unit(const std::string& text, const std::string& unit) {
+  const bool bare = !text.empty() && text.find_first_not_of("0123456789.,- ") == std::string::npos;
+  return bare ? text + " " + unit : text;
 }
 
 void set_usual(DraftRow& row) {
@@ -74,16 +83,17 @@ Draft blank_draft(const bath::Tank& tank, const bath::BathType& type) {
   return draft;
 }
 
-std::string readings_text(const Draft& draft, const std::string& sampled, std::vector<int>& line_of_row) {
+std::string readings_text(const Draft& draft, const HeadUnits& units, std::vector<int>& line_of_row) {
   std::string text;
   int line = 1;
   const auto add = [&](const std::string& words) {
     text += words + '\n';
     ++line;
   };
-  if (!sampled.empty()) add("sampled = " + sampled);
-  if (!draft.volume.empty()) add("volume = " + quoted(draft.volume));
-  if (!draft.temperature.empty()) add("temperature = " + quoted(draft.temperature));
+  if (!draft.sampled.empty()) add("sampled = " + draft.sampled);
+  if (!draft.volume.empty()) add("volume = " + in_quotes(with_unit(draft.volume, units.volume)));
+  if (!draft.temperature.empty())
+    add("temperature = " + in_quotes(with_unit(draft.temperature, units.temperature)));
   if (!draft.pH.empty()) add("pH = " + number(draft.pH));
   line_of_row.assign(draft.rows.size(), 0);
   for (std::size_t i = 0; i < draft.rows.size(); ++i) {
@@ -91,14 +101,15 @@ std::string readings_text(const Draft& draft, const std::string& sampled, std::v
     if (row.is_empty()) continue;
     line_of_row[i] = line;
     add(row.is_value() ? "[[found]]" : "[[titration]]");
-    add("quantity = " + quoted(row.quantity));
+    add("quantity = " + in_quotes(row.quantity));
     if (row.is_value()) {
-      add("value = " + quoted(row.value));
+      add("value = " + in_quotes(with_unit(row.value, units.value)));
     } else {
-      add("method = " + quoted(row.methods[static_cast<std::size_t>(row.method)]));
-      for (const auto& [key, value] :
-           {std::pair{"sample", &row.sample}, {"titrant", &row.titrant}, {"burette", &row.burette}})
-        if (!value->empty()) add(std::string(key) + " = " + quoted(*value));
+      add("method = " + in_quotes(row.methods[static_cast<std::size_t>(row.method)]));
+      for (const auto& [key, value, unit] : {std::tuple{"sample", &row.sample, "mL"},
+                                             {"titrant", &row.titrant, "mol/L"},
+                                             {"burette", &row.burette, "mL"}})
+        if (!value->empty()) add(std::string(key) + " = " + in_quotes(with_unit(*value, unit)));
     }
   }
   return text;
@@ -112,11 +123,12 @@ void DraftHistory::begin_step(int row, Field field) {
   last_field_ = field;
 }
 
-void DraftHistory::type(const TypeReading& typed) {
+void DraftHistory::type(const TypeReading& typed, const std::string& now) {
   if (typed.row >= static_cast<int>(now_.rows.size())) return;
   if (field_of(now_, typed.row, typed.field) == typed.text) return;
   begin_step(typed.row, typed.field);
   field_of(now_, typed.row, typed.field) = typed.text;
+  if (now_.sampled.empty()) now_.sampled = now;
 }
 
 void DraftHistory::choose(const ChooseMethod& chosen) {
@@ -128,6 +140,11 @@ void DraftHistory::choose(const ChooseMethod& chosen) {
   begin_step(chosen.row, Field::method);
   row.method = chosen.method;
   set_usual(row);
+}
+
+void DraftHistory::start_again(Draft blank) {
+  begin_step(-3, Field::method);
+  now_ = std::move(blank);
 }
 
 void DraftHistory::undo() {
@@ -153,25 +170,12 @@ Outcome keep_draft(const std::filesystem::path& file, const Draft& draft) {
                     {"titrant", row.titrant},
                     {"burette", row.burette},
                     {"value", row.value}});
-  const Json all = {{"volume", draft.volume},
+  const Json all = {{"sampled", draft.sampled},
+                    {"volume", draft.volume},
                     {"temperature", draft.temperature},
                     {"pH", draft.pH},
                     {"rows", std::move(rows)}};
-  std::error_code failed;
-  std::filesystem::create_directories(file.parent_path(), failed);
-  const std::filesystem::path part = file.string() + ".part";
-  {
-    std::ofstream out(part, std::ios::binary);
-    out << all.dump(1, ' ', false, Json::error_handler_t::replace);
-    out.close();
-    if (!out)
-      return Problem{Fault::io, part.string(), "the readings typed so far cannot be kept", "",
-                     "Check the disk."};
-  }
-  std::filesystem::rename(part, file, failed);
-  if (failed)
-    return Problem{Fault::io, file.string(), failed.message(), "", "Check the folder and its rights."};
-  return Done{};
+  return write_whole(file, all.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 
 Result<std::optional<Draft>> kept_draft(const std::filesystem::path& file, const Draft& blank) {
@@ -187,6 +191,7 @@ Result<std::optional<Draft>> kept_draft(const std::filesystem::path& file, const
                                                                            : std::string();
   };
   Draft draft = blank;
+  draft.sampled = text(all, "sampled");
   draft.volume = text(all, "volume");
   draft.temperature = text(all, "temperature");
   draft.pH = text(all, "pH");

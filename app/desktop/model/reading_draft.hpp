@@ -24,6 +24,7 @@ struct DraftRow {
 };
 
 struct Draft {
+  std::string sampled;  ///< local time the first reading was typed, "2026-03-02T05:40:00"
   std::string volume, temperature, pH;
   std::vector<DraftRow> rows;
   bool operator==(const Draft&) const = default;
@@ -33,9 +34,14 @@ struct Draft {
 /// them.
 [[nodiscard]] Draft blank_draft(const bath::Tank& tank, const bath::BathType& type);
 
+/// What a bare number in a field means; burettes and samples are in mL, titrants in mol/L.
+struct HeadUnits {
+  std::string volume = "L", temperature = "degC", value = "g/L";
+};
+
 /// The text of a readings file: what is typed, empty rows left out. `line_of_row` gets the line each row's
 /// block begins on (0: left out), to bring a message back to its row.
-[[nodiscard]] std::string readings_text(const Draft& draft, const std::string& sampled,
+[[nodiscard]] std::string readings_text(const Draft& draft, const HeadUnits& units,
                                         std::vector<int>& line_of_row);
 
 /// A draft with its past. Typing on in one field is one step.
@@ -47,8 +53,11 @@ class DraftHistory {
   [[nodiscard]] bool can_undo() const { return !past_.empty(); }
   [[nodiscard]] bool can_redo() const { return !future_.empty(); }
 
-  void type(const TypeReading& typed);
+  /// `now`: local time, for the first reading of a sample.
+  void type(const TypeReading& typed, const std::string& now);
   void choose(const ChooseMethod& chosen);
+  /// Everything typed is put away, for the next sample; can be undone.
+  void start_again(Draft blank);
   void undo();
   void redo();
 

@@ -1,8 +1,11 @@
 #include "tank_work.hpp"
 
 #include <algorithm>
+#include <bathwright/bath/uncertainty.hpp>
 #include <fstream>
 #include <iterator>
+
+#include "work/planning.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -13,8 +16,8 @@ std::string contents(const std::filesystem::path& file) {
 }
 
 /// Free ions and headroom along a plan, a few points for each of its steps.
-std::vector<PathPoint> path_of(const command::Shop& shop, const bath::TankState& from,
-                               const dosing::Plan& plan, const std::stop_token& stop) {
+std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& from, const dosing::Plan& plan,
+                               const std::stop_token& stop) {
   constexpr int points_a_step = 3;
   std::vector<PathPoint> path;
   bath::TankState state = from;
@@ -39,70 +42,70 @@ std::vector<PathPoint> path_of(const command::Shop& shop, const bath::TankState&
 
 }  // namespace
 
-Result<std::shared_ptr<const command::Shop>> TankWork::opened(const Question& question) {
+Result<std::shared_ptr<const work::Shop>> TankWork::opened(const Question& question) {
   std::error_code failed;
   const auto time = std::filesystem::last_write_time(question.tank_file, failed);
   if (shop_ && shop_file_ == question.tank_file && time == shop_time_) return shop_;
-  auto shop = command::open_shop(question.context, question.tank_file.string());
+  auto shop = work::open_shop(question.session, question.tank_file.string());
   if (!shop) return shop.problems();
-  shop_ = std::make_shared<const command::Shop>(*std::move(shop));
+  shop_ = std::make_shared<const work::Shop>(*std::move(shop));
   shop_file_ = question.tank_file;
   shop_time_ = time;
   planned_.reset();
   return shop_;
 }
 
-Worked TankWork::answer(const Question& question, const std::stop_token& stop) {
+/// From the readings, or from what the log or the tank file say, to the state and its plans.
+Worked TankWork::worked_out(const Question& question, const std::shared_ptr<const work::Shop>& shop) const {
   Worked worked;
-  auto shop = opened(question);
-  if (!shop) {
-    worked.problems = shop.problems();
+  worked.shop = shop;
+  worked.tank_file = question.tank_file;
+  worked.readings_file = question.readings_file;
+  const auto failed = [&](const Problems& problems) {
+    worked.problems = problems;
     return worked;
-  }
-  const std::string key = question.readings_file.string() + '\n' + contents(question.readings_file);
-  if (planned_ && planned_for_ == key) {
-    worked = *planned_;
+  };
+  bath::TankState state;
+  if (question.readings_file.empty()) {
+    const auto start = work::starting_state(question.session, *shop, "");
+    if (!start) return failed(start.problems());
+    worked.read = start->read;
+    state = start->state;
   } else {
-    worked.shop = *shop;
-    bath::TankState state;
-    if (question.readings_file.empty()) {
-      const auto start = command::starting_state(question.context, **shop, "");
-      if (!start) {
-        worked.problems = start.problems();
-        return worked;
-      }
-      worked.read = start->read;
-      state = start->state;
-    } else {
-      auto analysed = command::analyse(question.context, **shop, question.readings_file.string());
-      if (!analysed) {
-        worked.problems = analysed.problems();
-        return worked;
-      }
-      state = analysed->analysis.state;
-      worked.analysed = *std::move(analysed);
-    }
-    auto view = (*shop)->chemistry.view(state);
-    if (!view) {
-      worked.problems = view.problems();
-      return worked;
-    }
-    worked.now = *std::move(view);
-    if (stop.stop_requested()) return worked;
-    if (worked.analysed) {
-      dosing::Request request;
-      for (const auto& level : worked.analysed->analysis.results)
-        request.uncertainty[level.quantity] = level.standard_uncertainty.v;
-      auto sheet = dosing::plan_additions((*shop)->tank, (*shop)->chemistry, state, request);
-      if (sheet)
-        worked.sheet = *std::move(sheet);
-      else
-        worked.problems = sheet.problems();
-    }
-    planned_for_ = key;
-    planned_ = worked;
+    auto analysed = work::analyse(question.session, *shop, question.readings_file.string());
+    if (!analysed) return failed(analysed.problems());
+    state = analysed->analysis.state;
+    worked.analysed = *std::move(analysed);
   }
-  if (!worked.analysed || stop.stop_requested()) return worked;
+  auto view = bath::view_with_uncertainty(shop->chemistry, state);
+  if (!view) return failed(view.problems());
+  worked.now = *std::move(view);
+  if (!worked.analysed) return worked;
+  auto sheet = dosing::plan_additions(shop->tank, shop->chemistry, state,
+                                      work::request_for(worked.analysed->analysis, 0));
+  if (!sheet) return failed(sheet.problems());
+  worked.sheet = *std::move(sheet);
+  return worked;
+}
+
+void TankWork::answer(const Question& question, const std::stop_token& stop,
+                      const std::function<void(Worked)>& give) {
+  const auto shop = opened(question);
+  if (!shop) {
+    Worked worked;
+    worked.tank_file = question.tank_file;
+    worked.problems = shop.problems();
+    return give(std::move(worked));
+  }
+  const std::string key = question.readings_file.string() + '\n' + contents(question.readings_file) + '\n' +
+                          std::to_string(question.log_state);
+  if (!planned_ || planned_for_ != key) {
+    planned_ = worked_out(question, *shop);
+    planned_for_ = key;
+    sampled_ = false;
+  }
+  Worked worked = *planned_;
+  if (!worked.analysed || !worked.sheet) return give(std::move(worked));
   const bath::TankState& from = worked.analysed->analysis.state;
   if (!question.edited.empty()) {
     std::vector<dosing::Wanted> wanted;
@@ -116,13 +119,21 @@ Worked TankWork::answer(const Question& question, const std::stop_token& stop) {
       worked.problems = own.problems();
   }
   const auto& sheet = worked.own ? worked.own : worked.sheet;
-  if (sheet && !sheet->plans.empty()) {
+  if (!sheet->plans.empty()) {
     const auto plan =
         worked.own ? 0
                    : std::min<std::size_t>(static_cast<std::size_t>(question.plan), sheet->plans.size() - 1);
     worked.path = path_of(**shop, from, sheet->plans[plan], stop);
   }
-  return worked;
+  give(worked);
+  if (sampled_ || worked.own || stop.stop_requested()) return;
+  auto sampled =
+      dosing::plan_additions((*shop)->tank, (*shop)->chemistry, from,
+                             work::request_for(worked.analysed->analysis, dosing::Sampling{}.samples));
+  if (!sampled) return;
+  sampled_ = true;
+  planned_->sheet = worked.sheet = *std::move(sampled);
+  give(std::move(worked));
 }
 
 }  // namespace bathwright::desktop

@@ -6,11 +6,12 @@
 #include <bathwright/dosing/check_plan.hpp>
 #include <bathwright/sheets/tank_sheet.hpp>
 #include <filesystem>
+#include <functional>
 #include <memory>
 #include <stop_token>
 
-#include "shop.hpp"
-#include "tank_state.hpp"
+#include "work/shop.hpp"
+#include "work/tank_state.hpp"
 
 namespace bathwright::desktop {
 
@@ -21,17 +22,19 @@ struct PathPoint {
 };
 
 struct Question {
-  command::Context context;
+  work::Session session;
   std::filesystem::path tank_file;
   std::filesystem::path readings_file;  ///< empty: nothing typed
   /// Amounts of the plan as a person changed them, in the order of its additions; empty: as planned.
   std::vector<std::pair<std::string, double>> edited;  ///< stock id, kg
   int plan = 0;
+  std::int64_t log_state = 0;  ///< the last entry of the log: what follows from it is worked out anew
 };
 
 struct Worked {
-  std::shared_ptr<const command::Shop> shop;
-  std::optional<command::Analysed> analysed;  ///< where readings were typed
+  std::filesystem::path tank_file, readings_file;
+  std::shared_ptr<const work::Shop> shop;
+  std::optional<work::Analysed> analysed;  ///< where readings were typed
   std::optional<sheets::StateRead> read;
   std::optional<bath::TankView> now;
   std::optional<dosing::AdditionSheet> sheet;  ///< the planner's
@@ -44,16 +47,20 @@ struct Worked {
 /// readings.
 class TankWork {
  public:
-  Worked answer(const Question& question, const std::stop_token& stop);
+  /// Gives the plans first, then with how sure they are.
+  void answer(const Question& question, const std::stop_token& stop, const std::function<void(Worked)>& give);
 
  private:
-  Result<std::shared_ptr<const command::Shop>> opened(const Question& question);
+  Result<std::shared_ptr<const work::Shop>> opened(const Question& question);
+  [[nodiscard]] Worked worked_out(const Question& question,
+                                  const std::shared_ptr<const work::Shop>& shop) const;
 
   std::filesystem::path shop_file_;
   std::filesystem::file_time_type shop_time_{};
-  std::shared_ptr<const command::Shop> shop_;
+  std::shared_ptr<const work::Shop> shop_;
   std::string planned_for_;  ///< the readings the last plans were made for
   std::optional<Worked> planned_;
+  bool sampled_ = false;
 };
 
 }  // namespace bathwright::desktop

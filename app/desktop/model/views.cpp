@@ -3,8 +3,10 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <bathwright/sheets/log_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/units/show.hpp>
+#include <chrono>
 #include <cmath>
 
 namespace bathwright::desktop {
@@ -62,8 +64,10 @@ const dosing::Plan* shown_plan(const Worked& worked, int plan) {
   return &worked.sheet->plans[std::min(static_cast<std::size_t>(plan), worked.sheet->plans.size() - 1)];
 }
 
-ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row, const Worked* worked) {
+ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row, const Worked* worked,
+                           const Units& units) {
   ReadingsView view;
+  view.sampled = draft.sampled;
   view.volume = draft.volume;
   view.temperature = draft.temperature;
   view.pH = draft.pH;
@@ -86,8 +90,9 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
       if (draft.rows[i].is_empty()) continue;
       for (const auto& level : worked->analysed->analysis.results)
         if (level.quantity == draft.rows[i].quantity)
-          view.rows[i].result =
-              figure(level.value.v) + " ± " + units::significant(level.standard_uncertainty.v, 2) + " g/L";
+          view.rows[i].result = figure(units.level(level.value.v)) + " ± " +
+                                units::significant(units.level(level.standard_uncertainty.v), 2) + " " +
+                                units.concentration();
     }
   for (const Problem& problem : worked->problems) {
     const int row = row_at(line_of(problem), line_of_row);
@@ -104,7 +109,7 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
   return view;
 }
 
-StateView state_view(const Worked& worked, const dosing::Plan* plan) {
+StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units& units) {
   StateView view;
   if (!worked.shop || !worked.now) return view;
   const bath::Tank& tank = worked.shop->tank;
@@ -116,17 +121,23 @@ StateView state_view(const Worked& worked, const dosing::Plan* plan) {
       plan ? sheets::judge(tank, type, plan->final_view.quantity_g_per_L, plan->final_view.pH) : now;
   for (std::size_t i = 0; i < now.size(); ++i) {
     const sheets::Judged& judged = now[i];
-    const int decimals = judged.unit.empty() ? 2 : judged.found < 10 ? 2 : 1;
+    const bool is_level = judged.unit == "g/L";
+    const auto shown = [&](double value) { return is_level ? units.level(value) : value; };
+    const int decimals =
+        is_level || judged.unit.empty() ? (judged.unit.empty() || shown(judged.found) < 10 ? 2 : 1) : 1;
     ComponentRow row;
     row.name = judged.label;
-    row.unit = judged.unit;
+    row.unit = is_level ? units.concentration() : judged.unit;
     row.strip = {judged.aim->low, judged.aim->aim, judged.aim->high, judged.found, std::nullopt, 0};
-    if (plan && !plan->additions.empty()) row.strip.predicted = then[i].found;
+    if (plan && !plan->additions.empty()) {
+      row.strip.predicted = then[i].found;
+      row.predicted = fixed(shown(then[i].found), decimals);
+    }
     if (worked.analysed)
-      for (const auto& level : worked.analysed->analysis.results)
+      for (const auto& level : worked.analysed->analysis.reconciled)
         if (level.quantity == judged.aim->quantity) row.strip.u = level.standard_uncertainty.v;
-    row.found = fixed(judged.found, decimals);
-    row.aim = fmt::format("{:g}", judged.aim->aim);
+    row.found = fixed(shown(judged.found), decimals);
+    row.aim = fixed(shown(judged.aim->aim), decimals);
     row.state = state_of(judged.standing);
     row.word = std::string(sheets::words(judged.standing));
     view.rows.push_back(std::move(row));
@@ -135,7 +146,7 @@ StateView state_view(const Worked& worked, const dosing::Plan* plan) {
 }
 
 AdditionsView additions_view(const Worked& worked, int chosen,
-                             const std::vector<std::pair<std::string, double>>& edited) {
+                             const std::vector<std::pair<std::string, double>>& edited, const Units& units) {
   AdditionsView view;
   const dosing::Plan* plan = shown_plan(worked, chosen);
   if (!worked.shop || !worked.sheet || !plan) return view;
@@ -146,7 +157,11 @@ AdditionsView additions_view(const Worked& worked, int chosen,
   const auto money = [&](double cost) {
     return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);
   };
-  for (const dosing::Plan& one : worked.sheet->plans) view.plans.push_back(one.kind + ", " + money(one.cost));
+  for (const dosing::Plan& one : worked.sheet->plans)
+    view.plans.push_back(
+        one.kind + ", " + money(one.cost) +
+        (one.chances ? ", " + fixed(100 * one.chances->in_every_window, 0) + " %" : std::string()));
+  for (const bath::ShelfItem& item : tank.shelf) view.shelf.emplace_back(item.stock.id, item.stock.name);
   const dosing::Plan& planned =
       worked.sheet->plans[std::min(static_cast<std::size_t>(chosen), worked.sheet->plans.size() - 1)];
   for (const dosing::Addition& addition : planned.additions) {
@@ -164,8 +179,11 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
     for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH))
-      row.then += judged.label + " " + fixed(judged.found, judged.unit.empty() ? 2 : 1) + ", ";
-    row.then += fixed(step.predicted.volume_L, 0) + " L";
+      row.then += judged.label + " " +
+                  fixed(judged.unit == "g/L" ? units.level(judged.found) : judged.found,
+                        judged.unit.empty() ? 2 : 1) +
+                  ", ";
+    row.then += units.volume(step.predicted.volume_L);
     if (step.wait_h > 0) row.wait = "wait " + figure(step.wait_h, 2) + " h, stirred";
     for (const dosing::Check& check : step.checks) {
       if (check.ok) continue;
@@ -180,8 +198,10 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     view.refused.push_back(refusal.reason + " (" + refusal.rule + ")");
   view.cautions = sheet.cautions;
   view.unmet = plan->unmet;
-  if (plan->probability_in_window)
-    view.chance = fixed(100 * *plan->probability_in_window, 0) + " % chance of ending inside every window";
+  if (plan->chances)
+    view.chance = fixed(100 * plan->chances->in_every_window, 0) + " % chance of ending inside every window" +
+                  (plan->second_look ? "; worth a second look: " + pretty(plan->second_look->at) : "");
+  view.conflicts = plan->conflicts;
   view.ready = plan->feasible && !plan->additions.empty() && worked.analysed->analysis.suspects.empty() &&
                worked.analysed->changed_since.empty();
   view.verdict = !plan->feasible                               ? "not as it stands: see what stops it"
@@ -193,13 +213,13 @@ AdditionsView additions_view(const Worked& worked, int chosen,
   return view;
 }
 
-ChemistryView chemistry_view(const Worked& worked) {
+ChemistryView chemistry_view(const Worked& worked, const Units& units) {
   ChemistryView view;
   if (!worked.shop || !worked.now) return view;
   const bath::TankView& now = *worked.now;
   const bath::Chemistry& chemistry = worked.shop->chemistry;
-  view.working_at = units::significant(chemistry.working_temperature().v, 3) + " °C";
-  view.idle_at = units::significant(chemistry.idle_temperature().v, 3) + " °C";
+  view.working_at = units.temperature(chemistry.working_temperature().v);
+  view.idle_at = units.temperature(chemistry.idle_temperature().v);
   view.figures = {{"pH", fixed(now.pH, 2)},
                   {"ionic strength", figure(now.ionic_strength, 3) + " mol/kg"},
                   {"water activity", fixed(now.water_activity, 3)},
@@ -207,12 +227,13 @@ ChemistryView chemistry_view(const Worked& worked) {
   constexpr std::size_t most_ions = 10;
   for (const bath::SpeciesView& species : now.species) {
     if (view.ions.size() == most_ions) break;
-    view.ions.push_back({pretty(species.name), figure(species.molality, 3),
+    view.ions.push_back({species.name, pretty(species.name), figure(species.molality, 3),
                          figure(std::pow(10, species.log10_activity), 3), figure(species.gamma, 3),
                          species.molality / now.species.front().molality});
   }
   for (const bath::Headroom& room : now.headroom) {
     SolidRow row;
+    row.id = room.solid;
     row.name = pretty(room.solid);
     row.working = room_words(room.working_kg, room.working_log10, room.covers_working);
     row.idle = room_words(room.idle_kg, room.idle_log10, room.covers_idle);
@@ -250,6 +271,206 @@ ChemistryView chemistry_view(const Worked& worked) {
     }
   }
   view.doubts = now.warnings;
+  return view;
+}
+
+LineView line_view(const ShopFolder& shop, const LogNow& log, int selected) {
+  LineView view;
+  view.selected = selected;
+  for (const bath::Tank& tank : *shop.tanks) {
+    TankOnLine shown;
+    const std::size_t space = tank.name.find(' ');
+    shown.name = tank.name.substr(0, space);
+    if (space != std::string::npos) shown.kind = tank.name.substr(space + 1);
+    const double mark = tank.working_volume.v;
+    shown.vessel = {1, tank.freeboard.v / mark, false};
+    shown.word = "not analysed";
+    const auto seen = log.seen.find(tank.name);
+    if (seen != log.seen.end()) {
+      const LastSeen& last = seen->second;
+      if (last.volume_L) {
+        shown.vessel.level = *last.volume_L / mark;
+        shown.vessel.level_known = true;
+        shown.word = "in window";
+      }
+      if (!last.high.empty())
+        shown.state = charts::State::act, shown.word = pretty(last.high.front()) + " high";
+      if (!last.low.empty()) shown.state = charts::State::act, shown.word = "add " + pretty(last.low.front());
+      if (!last.stop.empty())
+        shown.state = charts::State::stop, shown.word = "stop: " + pretty(last.stop.front());
+      if (last.slip_open && shown.state != charts::State::stop)
+        shown.state = charts::State::act, shown.word = "slip is open";
+    }
+    view.tanks.push_back(std::move(shown));
+    view.shop = tank.shop;
+  }
+  return view;
+}
+
+SlipView slip_view(const std::optional<work::OpenSlip>& slip,
+                   const std::optional<shifts::Calendar>& calendar) {
+  SlipView view;
+  if (!slip) return view;
+  view.number = slip->seq;
+  view.issued = "issued " + sheets::local_time(slip->at, calendar) + " by " + slip->by;
+  view.approved_by_second = !slip->approved_by.empty();
+  view.approved = view.approved_by_second ? "approved by " + slip->approved_by
+                                          : "nobody has approved it yet: a second person reads it and signs";
+  view.all_done = true;
+  for (const work::SlipStep& step : slip->steps) {
+    SlipView::Row row;
+    row.step = step.number;
+    row.what = std::to_string(step.number) + "  " + figure(step.amount) + " " + step.unit + " " + step.name;
+    if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
+    row.how = step.how;
+    if (step.wait_h > 0) row.wait = "then wait " + figure(step.wait_h, 2) + " h, stirred";
+    if (step.done_as)
+      row.done = "entry " + std::to_string(*step.done_as) + ", " + sheets::local_time(step.done_at, calendar);
+    view.all_done = view.all_done && step.done_as.has_value();
+    view.steps.push_back(std::move(row));
+  }
+  return view;
+}
+
+namespace {
+
+/// The first thing an entry says, for a row of a table.
+std::string first_words(const logbook::Entry& entry) {
+  const work::Json body = work::Json::parse(entry.body, nullptr, false);
+  if (!body.is_object()) return "";
+  for (const char* key : {"note", "reason", "outcome", "name"})
+    if (body.contains(key) && body[key].is_string()) return body[key].get<std::string>();
+  if (body.contains("chemical") && body["chemical"].is_string()) {
+    const work::Json amount = body.value("amount", work::Json());
+    return (amount.is_number()   ? figure(amount.get<double>()) + " " + body.value("unit", "")
+            : amount.is_string() ? amount.get<std::string>()
+                                 : std::string()) +
+           " " + body["chemical"].get<std::string>();
+  }
+  if (body.contains("results") && body["results"].is_array()) {
+    std::string text;
+    for (const work::Json& result : body["results"])
+      if (result.is_object() && result.value("value", work::Json()).is_number())
+        text += (text.empty() ? "" : ", ") + pretty(result.value("quantity", "")) + " " +
+                figure(result["value"].get<double>(), 3);
+    return text;
+  }
+  const work::Json* plan = body.contains("plan") ? &body["plan"] : nullptr;
+  if (!plan && body.contains("plans") && body["plans"].is_array() && !body["plans"].empty())
+    plan = &body["plans"].front();
+  if (plan && plan->is_object() && plan->contains("additions") && (*plan)["additions"].is_array()) {
+    std::string text;
+    for (const work::Json& one : (*plan)["additions"])
+      if (one.is_object() && one.value("amount", work::Json()).is_number())
+        text += (text.empty() ? "" : ", ") + figure(one["amount"].get<double>(), 3) + " " +
+                one.value("unit", "") + " " + one.value("chemical", "");
+    return text;
+  }
+  return "";
+}
+
+LogRow row_of(const logbook::Entry& entry, const std::optional<shifts::Calendar>& calendar) {
+  LogRow row;
+  row.number = entry.seq;
+  row.seq = std::to_string(entry.seq);
+  row.at = sheets::local_time(entry.happened.empty() ? entry.at : entry.happened, calendar);
+  row.kind = std::string(logbook::name(entry.kind));
+  row.tank = entry.tank;
+  row.by = entry.by + (entry.witness.empty() ? "" : " and " + entry.witness);
+  row.words = first_words(entry);
+  if (entry.about)
+    row.words = "of entry " + std::to_string(*entry.about) + (row.words.empty() ? "" : ": " + row.words);
+  return row;
+}
+
+}  // namespace
+
+ShiftView shift_view(const LogNow& log, shifts::UtcTime now) {
+  ShiftView view;
+  if (!log.calendar || !log.told) {
+    view.shift = "No shifts are set";
+    view.clock = "Settings has them: the strip then shows this shift's work and what is due.";
+    return view;
+  }
+  const shifts::ShiftSpan& shift = log.told->shift;
+  const std::string from = log.calendar->zone().local_text(shift.from),
+                    to = log.calendar->zone().local_text(shift.to);
+  view.shift = shift.label;
+  view.clock = from.substr(from.size() - 5) + " to " + to.substr(to.size() - 5) + ", now " +
+               log.calendar->zone().local_text(now).substr(11);
+  const auto share = [&](shifts::UtcTime time) {
+    return std::chrono::duration<double>(time - shift.from) /
+           std::chrono::duration<double>(shift.to - shift.from);
+  };
+  view.elapsed = std::clamp(share(now), 0.0, 1.0);
+  for (auto entry = log.told->entries.rbegin(); entry != log.told->entries.rend(); ++entry) {
+    view.entries.push_back(row_of(*entry, log.calendar));
+    if (const auto time = logbook::utc_from_iso(entry->at)) view.entries.back().place = share(*time);
+  }
+  for (const logbook::Entry& slip : log.told->open_slips)
+    view.open.push_back("slip " + std::to_string(slip.seq) + " of " +
+                        slip.tank.substr(0, slip.tank.find(' ')));
+  for (const shifts::Due& due : log.told->due)
+    view.due.push_back(due.tank.substr(0, due.tank.find(' ')) + " " +
+                       pretty(due.what.substr(due.what.rfind(' ') + 1)) + (due.overdue ? " (overdue)" : ""));
+  return view;
+}
+
+LogView log_view(const LogNow& log) {
+  LogView view;
+  for (const logbook::Entry& entry : log.entries) view.rows.push_back(row_of(entry, log.calendar));
+  view.shown_text = log.entry_text;
+  for (const Problem& problem : log.problems) view.faults.push_back(problem.text());
+  return view;
+}
+
+ForecastView forecast_view(const Forecasted& told, const Units& units) {
+  ForecastView view;
+  for (const Problem& problem : told.problems) view.faults.push_back(problem.text());
+  if (!told.problems.empty()) return view;
+  view.from = "from " + told.from;
+  const Levers& levers = told.levers;
+  constexpr double longest_horizon = 730;
+  view.levers = {{"bleed", "L/day", levers.bleed_L_per_day, 0, 0},
+                 {"drag-out", "times the policy's", levers.drag_out, 0.2, 3},
+                 {"work", "times the policy's", levers.load, 0, 3},
+                 {"horizon", "days", static_cast<double>(levers.horizon_days), 14, longest_horizon}};
+  for (std::size_t i = 0; i < told.limits.size(); ++i) {
+    const auto& limit = told.limits[i];
+    LimitRow row;
+    row.name = pretty(limit.name);
+    row.why = std::string(forecast::name(limit.cause));
+    if (limit.day) {
+      row.state = charts::State::act;
+      row.when = "day " + fixed(*limit.day, 0) + (told.dates[i].empty() ? "" : ", " + told.dates[i]);
+      if (told.sampled && limit.day_p05 && limit.day_p95)
+        row.span = fixed(*limit.day_p05, 0) + " to " + fixed(*limit.day_p95, 0);
+    } else {
+      row.when =
+          limit.share > 0 ? fixed(100 * limit.share, 0) + " % of the samples" : "not within the horizon";
+    }
+    view.limits.push_back(std::move(row));
+  }
+  std::ranges::stable_sort(view.limits, [](const LimitRow& a, const LimitRow& b) {
+    return a.state == charts::State::act && b.state != charts::State::act;
+  });
+  const auto money = [&](double value) {
+    return fixed(value, 2) + (told.currency.empty() ? "" : " " + told.currency);
+  };
+  view.figures = {{"chemicals and water a day", money(told.summary.cost)},
+                  {"waste a day", units.volume(told.summary.waste_L) + ", " + money(told.summary.waste_cost)},
+                  {"water a day", units.volume(told.summary.top_up_L)},
+                  {"metal lost a day", figure(told.summary.metal_lost_kg, 3) + " kg"}};
+  double most_bleed = 0;
+  for (const auto& bleed : told.bleeds) {
+    view.figures.emplace_back("bleed that holds " + bleed.limit,
+                              figure(bleed.litres_per_day, 3) + " L more a day");
+    most_bleed = std::max(most_bleed, levers.bleed_L_per_day + bleed.litres_per_day);
+  }
+  constexpr double usual_bleed = 200;
+  view.levers[0].high = std::max({usual_bleed, 2 * levers.bleed_L_per_day, 1.5 * most_bleed});
+  view.charts = told.page.charts;
+  view.notes = told.notes;
   return view;
 }
 

@@ -2,17 +2,28 @@
 #pragma once
 
 #include "../panels/view.hpp"
+#include "forecast_work.hpp"
+#include "log_work.hpp"
 #include "reading_draft.hpp"
+#include "shop_folder.hpp"
 #include "tank_work.hpp"
+#include "units.hpp"
 
 namespace bathwright::desktop {
 
+[[nodiscard]] LineView line_view(const ShopFolder& shop, const LogNow& log, int selected);
 [[nodiscard]] ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row,
-                                         const Worked* worked);
-[[nodiscard]] StateView state_view(const Worked& worked, const dosing::Plan* plan);
+                                         const Worked* worked, const Units& units);
+[[nodiscard]] StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units& units);
 [[nodiscard]] AdditionsView additions_view(const Worked& worked, int plan,
-                                           const std::vector<std::pair<std::string, double>>& edited);
-[[nodiscard]] ChemistryView chemistry_view(const Worked& worked);
+                                           const std::vector<std::pair<std::string, double>>& edited,
+                                           const Units& units);
+[[nodiscard]] SlipView slip_view(const std::optional<work::OpenSlip>& slip,
+                                 const std::optional<shifts::Calendar>& calendar);
+[[nodiscard]] ChemistryView chemistry_view(const Worked& worked, const Units& units);
+[[nodiscard]] ShiftView shift_view(const LogNow& log, shifts::UtcTime now);
+[[nodiscard]] LogView log_view(const LogNow& log);
+[[nodiscard]] ForecastView forecast_view(const Forecasted& told, const Units& units);
 
 /// The plan that is shown: the edited one, else the chosen one; nullptr where there is none.
 [[nodiscard]] const dosing::Plan* shown_plan(const Worked& worked, int plan);

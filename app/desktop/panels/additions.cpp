@@ -29,33 +29,43 @@ void draw_amounts(const AdditionsView& view, Intents& out) {
   ImGui::EndTable();
 }
 
-void draw_step(const StepRow& step, int index, const Look& look, Intents& out) {
+void draw_step(const StepRow& step, int index, const Look& look) {
   ImGui::PushID(index);
-  bool done = false;
-  if (ImGui::Checkbox("##done", &done) && !step.refused) out.emplace_back(LogStepDone{index});
-  ImGui::SameLine();
   bold(look, step.number + "  " + step.what);
-  ImGui::Indent(look.px(32));
+  ImGui::Indent(look.px(20));
   for (const std::string& why : step.stops) standing(look, static_cast<int>(charts::State::stop), why);
   if (!step.how.empty()) said(look, look.palette.ink, step.how);
   if (!step.then.empty()) said(look, look.palette.predicted, "then " + step.then);
   for (const std::string& what : step.watch) standing(look, static_cast<int>(charts::State::act), what);
   if (step.stops.empty())
     quiet(look, std::to_string(step.checks) + " checks passed" + (step.wait.empty() ? "" : "; " + step.wait));
-  ImGui::Unindent(look.px(32));
+  ImGui::Unindent(look.px(20));
   ImGui::PopID();
+}
+
+/// Something of the shelf that the plan does not have.
+void draw_add(const AdditionsView& view, PanelState& state, const Look& look, Intents& out) {
+  if (view.shelf.empty()) return;
+  const auto chosen = std::min(static_cast<std::size_t>(state.add), view.shelf.size() - 1);
+  ImGui::SetNextItemWidth(look.px(240));
+  if (ImGui::BeginCombo("##shelf", view.shelf[chosen].second.c_str())) {
+    for (std::size_t i = 0; i < view.shelf.size(); ++i)
+      if (ImGui::Selectable(view.shelf[i].second.c_str(), i == chosen)) state.add = static_cast<int>(i);
+    ImGui::EndCombo();
+  }
+  ImGui::SameLine();
+  if (ImGui::Button("Add it to the list")) out.emplace_back(AddChemical{view.shelf[chosen].first});
 }
 
 }  // namespace
 
-void draw_additions(const AdditionsView& view, const Look& look, Intents& out) {
+void draw_additions(const AdditionsView& view, PanelState& state, const Look& look, Intents& out) {
   heading(look, "Additions");
   if (view.plans.empty() && view.refused.empty()) {
     quiet(look, view.working ? "planning ..." : "Type the readings above; the additions follow.");
     return;
   }
   for (std::size_t i = 0; i < view.plans.size(); ++i) {
-    if (i > 0) ImGui::SameLine();
     if (ImGui::RadioButton(view.plans[i].c_str(), static_cast<int>(i) == view.plan && !view.edited))
       out.emplace_back(ChoosePlan{static_cast<int>(i)});
   }
@@ -65,12 +75,14 @@ void draw_additions(const AdditionsView& view, const Look& look, Intents& out) {
     if (ImGui::SmallButton("back to the plan")) out.emplace_back(BackToPlan{});
   }
   draw_amounts(view, out);
+  draw_add(view, state, look, out);
   if (!view.chance.empty()) quiet(look, view.chance);
   for (const std::string& unmet : view.unmet) standing(look, static_cast<int>(charts::State::act), unmet);
+  for (const std::string& conflict : view.conflicts)
+    standing(look, static_cast<int>(charts::State::act), conflict);
   for (const std::string& refused : view.refused)
     standing(look, static_cast<int>(charts::State::stop), refused);
-  for (std::size_t i = 0; i < view.steps.size(); ++i)
-    draw_step(view.steps[i], static_cast<int>(i), look, out);
+  for (std::size_t i = 0; i < view.steps.size(); ++i) draw_step(view.steps[i], static_cast<int>(i), look);
   if (!view.cautions.empty() && ImGui::TreeNodeEx("Handling cautions", ImGuiTreeNodeFlags_DefaultOpen)) {
     for (const std::string& caution : view.cautions) said(look, look.palette.ink, caution);
     ImGui::TreePop();

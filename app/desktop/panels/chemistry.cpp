@@ -3,7 +3,7 @@
 namespace bathwright::desktop {
 namespace {
 
-void draw_ions(const ChemistryView& view, const Look& look) {
+void draw_ions(const ChemistryView& view, const Look& look, Intents& out) {
   if (!ImGui::BeginTable("ions", 3, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] : {std::pair{"ion", 1.3F}, {"mol/kg", 1.6F}, {"activity", 0.9F}})
     ImGui::TableSetupColumn(name, 0, weight);
@@ -12,7 +12,8 @@ void draw_ions(const ChemistryView& view, const Look& look) {
   for (const IonRow& ion : view.ions) {
     ImGui::TableNextRow();
     ImGui::TableNextColumn();
-    ImGui::TextUnformatted(ion.name.c_str());
+    if (ImGui::Selectable(ion.name.c_str(), false)) out.emplace_back(AskSource{ion.id});
+    if (ImGui::IsItemHovered()) ImGui::SetTooltip("where its constants come from");
     ImGui::TableNextColumn();
     const float width = ImGui::GetContentRegionAvail().x / look.scale,
                 height = ImGui::GetTextLineHeight() / look.scale;
@@ -30,7 +31,7 @@ void draw_ions(const ChemistryView& view, const Look& look) {
   ImGui::EndTable();
 }
 
-void draw_solids(const ChemistryView& view, const Look& look) {
+void draw_solids(const ChemistryView& view, const Look& look, Intents& out) {
   if (view.solids.empty() || !ImGui::BeginTable("solids", 3, ImGuiTableFlags_SizingStretchProp)) return;
   ImGui::TableSetupColumn("solid", 0, 1.4F);
   ImGui::TableSetupColumn(view.working_at.c_str(), 0, 1);
@@ -49,6 +50,7 @@ void draw_solids(const ChemistryView& view, const Look& look) {
     ImGui::TableNextColumn();
     standing(look, static_cast<int>(solid.forms ? charts::State::stop : charts::State::in_window),
              solid.name);
+    if (ImGui::IsItemClicked()) out.emplace_back(AskSource{solid.id});
     room(solid.working, solid.working_share);
     room(solid.idle, solid.idle_share);
   }
@@ -58,7 +60,7 @@ void draw_solids(const ChemistryView& view, const Look& look) {
 
 }  // namespace
 
-void draw_chemistry(const ChemistryView& view, const Look& look) {
+void draw_chemistry(const ChemistryView& view, const SourceView& source, const Look& look, Intents& out) {
   heading(look, "The chemistry of it");
   for (const auto& [name, value] : view.figures) {
     ImGui::TextUnformatted(name.c_str());
@@ -66,20 +68,23 @@ void draw_chemistry(const ChemistryView& view, const Look& look) {
     right_aligned(value, look.fonts.bold);
   }
   heading(look, "Free ions");
-  draw_ions(view, look);
+  draw_ions(view, look, out);
   heading(look, "Room before it crystallises");
-  draw_solids(view, look);
+  draw_solids(view, look, out);
   if (!view.path.empty()) {
     heading(look, "Along the additions");
     for (const charts::Chart& chart : view.path) {
       const float width = ImGui::GetContentRegionAvail().x / look.scale;
-      DrawListCanvas canvas = drawing_room(look, width, 190);
-      charts::draw(chart, canvas, {0, 0, width, 190}, look.palette);
+      draw_plot(chart, width, 190, look);
     }
   }
   if (!view.doubts.empty()) {
     heading(look, "Doubts");
     for (const std::string& doubt : view.doubts) quiet(look, doubt);
+  }
+  if (!source.text.empty()) {
+    heading(look, "Where " + source.species + " comes from");
+    for (const std::string& line : source.text) quiet(look, line);
   }
 }
 

@@ -3,59 +3,129 @@
 namespace bathwright::desktop {
 namespace {
 
-constexpr float rail = 190, strip = 74, status = 24, chemistry = 330;
+constexpr float pages_high = 38, rail = 190, strip = 66, status = 22, chemistry = 330;
 constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoDecoration | ImGuiWindowFlags_NoMove |
                                    ImGuiWindowFlags_NoBringToFrontOnFocus | ImGuiWindowFlags_NoSavedSettings;
+constexpr std::pair<PageName, const char*> pages[] = {
+    {PageName::shift, "The shift"}, {PageName::forecast, "Forecast"},   {PageName::trends, "Trends"},
+    {PageName::log, "Log"},         {PageName::hand_over, "Hand over"}, {PageName::bath_types, "Bath types"},
+    {PageName::people, "People"},   {PageName::settings, "Settings"}};
 
-void draw_page(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+/// The pages as words; the one that is open is underlined.
+void draw_pages(const DeskView& view, const Look& look, Intents& out) {
+  ImGui::SetCursorPos({look.px(rail), look.px(6)});
+  for (const auto& [page, words] : pages) {
+    const bool open = page == view.page;
+    ImGui::PushFont(open ? look.fonts.bold : look.fonts.body);
+    ImGui::PushStyleColor(ImGuiCol_Button, colour(look.palette.page));
+    ImGui::PushStyleColor(ImGuiCol_Text, colour(open ? look.palette.accent : look.palette.ink));
+    if (ImGui::Button(words)) out.emplace_back(GoTo{page});
+    ImGui::PopStyleColor(2);
+    ImGui::PopFont();
+    const ImVec2 low = ImGui::GetItemRectMin(), high = ImGui::GetItemRectMax();
+    if (open)
+      ImGui::GetWindowDrawList()->AddRectFilled({low.x, high.y}, {high.x, high.y + look.px(2)},
+                                                packed(look.palette.accent));
+    ImGui::SameLine(0, look.px(4));
+  }
+  ImGui::NewLine();
+}
+
+/// Ctrl and a figure opens a page, Ctrl and an arrow the next tank, Ctrl Z takes the last typing back.
+void keys(const DeskView& view, Intents& out) {
+  const ImGuiIO& io = ImGui::GetIO();
+  if (!io.KeyCtrl) return;
+  for (int i = 0; i < static_cast<int>(std::size(pages)); ++i)
+    if (ImGui::IsKeyPressed('1' + i, false)) out.emplace_back(GoTo{pages[i].first});
+  if (ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_DownArrow)))
+    out.emplace_back(OpenTank{view.line.selected + 1});
+  if (ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_UpArrow)))
+    out.emplace_back(OpenTank{view.line.selected - 1});
+  if (!io.WantTextInput && ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_Z), false))
+    out.emplace_back(UndoTyping{});
+}
+
+void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
   ImGui::PushFont(look.fonts.heading);
   ImGui::TextUnformatted(view.tank_title.c_str());
   ImGui::PopFont();
   if (!view.tank_sub.empty()) quiet(look, view.tank_sub);
-  if (!view.empty.empty()) {
-    said(look, look.palette.ink, view.empty);
-    return;
-  }
   draw_readings(view.readings, state, look, out);
   draw_state(view.state, look);
-  draw_additions(view.additions, look, out);
-  draw_sign(view.sign, view.additions, state, look, out);
+  if (view.slip.number != 0) {
+    draw_slip(view.slip, view.sign, state, look, out);
+  } else {
+    draw_additions(view.additions, state, look, out);
+    draw_sign(view.sign, view.additions, state, look, out);
+  }
+}
+
+void draw_page(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  switch (view.page) {
+    case PageName::shift:
+      return draw_tank(view, state, look, out);
+    case PageName::forecast:
+      return draw_forecast(view.forecast, view.tank_title, state, look, out);
+    case PageName::trends:
+      return draw_trends(view.trends, view.tank_title, look);
+    case PageName::log:
+      return draw_log(view.log, state, look, out);
+    case PageName::hand_over:
+      return draw_hand_over(view.hand_over, view.sign, state, look, out);
+    case PageName::bath_types:
+      return draw_bath_types(view.bath_types, look);
+    case PageName::people:
+      return draw_people(view, state, look, out);
+    case PageName::settings:
+      return draw_settings(view, state, look, out);
+  }
 }
 
 }  // namespace
 
 void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  keys(view, out);
   const ImVec2 all = ImGui::GetIO().DisplaySize;
   ImGui::SetNextWindowPos({0, 0});
   ImGui::SetNextWindowSize(all);
   ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {0, 0});
   ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {0, 0});
   ImGui::Begin("desk", nullptr, fixed);
-  ImGui::PopStyleVar(2);
-  const float body = all.y - look.px(strip + status), left = look.px(rail), right = look.px(chemistry);
-  const auto panel = [&](const char* name, ImVec2 size, auto&& draw) {
-    ImGui::BeginChild(name, size, true);
-    draw();
-    ImGui::EndChild();
-  };
-  ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {0, 0});
-  const auto spaced = [&](auto&& draw) {
-    return [&, draw] {
-      ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {look.px(8), look.px(4)});
-      draw();
-      ImGui::PopStyleVar();
-    };
-  };
-  panel("line", {left, body}, spaced([&] { draw_line(view.line, look, out); }));
-  ImGui::SameLine();
-  panel("tank", {all.x - left - right, body}, spaced([&] { draw_page(view, state, look, out); }));
-  ImGui::SameLine();
-  panel("chemistry", {right, body}, spaced([&] { draw_chemistry(view.chemistry, look); }));
-  panel("shift", {all.x, look.px(strip)}, spaced([&] { draw_shift(view.shift, look); }));
   ImGui::PopStyleVar();
-  ImGui::SetCursorPosX(look.px(12));
-  quiet(look, view.status.log + "    " + view.status.renderer + "    " + view.status.doing);
+  const auto panel = [&](const char* name, ImVec2 size, const auto& draw) {
+    ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {look.px(12), look.px(8)});
+    ImGui::BeginChild(name, size, true);
+    ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {look.px(8), look.px(4)});
+    draw();
+    ImGui::PopStyleVar();
+    ImGui::EndChild();
+    ImGui::PopStyleVar();
+  };
+  if (view.first_start) {
+    panel("first", all, [&] { draw_first_start(view, state, look, out); });
+  } else {
+    draw_pages(view, look, out);
+    const bool with_chemistry = view.page == PageName::shift;
+    const float top = look.px(pages_high), body = all.y - top - look.px(strip + status), left = look.px(rail),
+                right = with_chemistry ? look.px(chemistry) : 0;
+    ImGui::SetCursorPos({0, top});
+    panel("line", {left, body}, [&] { draw_line(view.line, look, out); });
+    ImGui::SameLine();
+    panel("page", {all.x - left - right, body}, [&] { draw_page(view, state, look, out); });
+    if (with_chemistry) {
+      ImGui::SameLine();
+      panel("chemistry", {right, body}, [&] { draw_chemistry(view.chemistry, view.source, look, out); });
+    }
+    panel("shift", {all.x, look.px(strip)}, [&] { draw_shift(view.shift, look, out); });
+    ImGui::SetCursorPosX(look.px(12));
+    const std::string words = view.status.log + "     " + view.status.renderer + "     " + view.status.doing;
+    if (!view.fault.empty())
+      said(look, look.palette.stop, view.fault.substr(0, view.fault.find('\n')));
+    else
+      quiet(look, words);
+  }
   ImGui::End();
+  ImGui::PopStyleVar();
 }
 
 }  // namespace bathwright::desktop

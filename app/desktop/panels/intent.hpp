@@ -1,15 +1,24 @@
 // What a person asks for with the mouse or the keys. Panels hand these out; the model decides.
 #pragma once
 
+#include <cstdint>
 #include <string>
 #include <variant>
+#include <vector>
 
 namespace bathwright::desktop {
 
+enum class PageName : std::uint8_t { shift, forecast, trends, log, hand_over, bath_types, people, settings };
+
+struct GoTo {
+  PageName page;
+};
 struct OpenTank {
   int tank;
 };
-enum class Field { volume, temperature, pH, method, sample, titrant, burette, value };
+
+// The readings.
+enum class Field : std::uint8_t { volume, temperature, pH, method, sample, titrant, burette, value };
 struct TypeReading {
   int row;  ///< -1: the whole sample
   Field field;
@@ -20,6 +29,9 @@ struct ChooseMethod {
 };
 struct UndoTyping {};
 struct RedoTyping {};
+struct NewSample {};
+
+// The additions.
 struct ChoosePlan {
   int plan;
 };
@@ -27,16 +39,86 @@ struct DragAmount {
   int addition;
   double amount;
 };
-struct BackToPlan {};
-struct LogAnalysis {};
-struct IssueSlip {
-  std::string by, pin;
+struct AddChemical {
+  std::string chemical;  ///< id of a shelf item
 };
-struct LogStepDone {
+struct BackToPlan {};
+
+/// Who signs, and who signs second where that is asked for.
+struct Names {
+  std::string by, pin, second, second_pin;
+};
+struct LogAnalysis {
+  Names names;
+};
+struct IssueSlip {
+  Names names;
+};
+struct StepDone {
   int step;
+  Names names;
+};
+struct ApproveSlip {
+  Names names;
+};
+struct CloseSlip {
+  bool cancelled;
+  std::string reason;
+  Names names;
+};
+struct HandOver {
+  Names names;
+};
+struct SetShifts {
+  std::string pattern, zone;
+  Names names;
+};
+struct AdmitPerson {
+  std::string name, role, pin;
+  Names names;
 };
 
-using Intent = std::variant<OpenTank, TypeReading, ChooseMethod, UndoTyping, RedoTyping, ChoosePlan,
-                            DragAmount, BackToPlan, LogAnalysis, IssueSlip, LogStepDone>;
+// The forecast.
+struct ChoosePolicy {
+  int policy;
+};
+struct MoveLever {
+  int lever;
+  double value;
+};
+struct StopSampling {};
+
+// Anything else.
+struct FilterLog {
+  std::string text;
+};
+struct ShowEntry {
+  std::int64_t seq;
+};
+struct AskSource {
+  std::string species;
+};
+enum class Sheet : std::uint8_t { slip, hand_over, forecast, trends };
+struct SaveSheet {
+  Sheet sheet;
+  std::string file;
+};
+struct OpenFolder {
+  std::string folder;
+};
+struct OpenDemonstration {};
+struct SetLook {
+  float scale;
+  bool dark;
+};
+struct SetUnits {
+  int concentration, volume, temperature;  ///< in the order of the settings page
+};
+
+using Intent = std::variant<GoTo, OpenTank, TypeReading, ChooseMethod, UndoTyping, RedoTyping, NewSample,
+                            ChoosePlan, DragAmount, AddChemical, BackToPlan, LogAnalysis, IssueSlip, StepDone,
+                            ApproveSlip, CloseSlip, HandOver, SetShifts, AdmitPerson, ChoosePolicy, MoveLever,
+                            StopSampling, FilterLog, ShowEntry, AskSource, SaveSheet, OpenFolder,
+                            OpenDemonstration, SetLook, SetUnits>;
 
 }  // namespace bathwright::desktop

@@ -1,5 +1,5 @@
-// The panels of the shift's page. Each is a function: what to show and a little state of its own in, what the
-// person asks for out.
+// The panels. Each is a function: what to show and a little state of its own in, what the person asks for
+// out.
 #pragma once
 
 #include "intent.hpp"
@@ -17,22 +17,53 @@ struct Typing {
   std::string text;
 };
 
-struct PanelState {
-  Typing typing;
-  std::string pin;
-  int signer = 0;
+/// Who works, as typed; PINs stay until they are cleared or the window is closed.
+struct SignerState {
+  int by = 0, second = -1;
+  std::string name, pin, second_pin;
 };
 
+struct PanelState {
+  Typing typing;
+  SignerState signer;
+  std::string filter, folder, reason, new_name, new_pin, zone, file;
+  int new_role = 0, pattern = 0, add = 0;
+  std::int64_t asked_entry = 0;
+};
+
+/// Those who sign, as chosen in the sign panel.
+[[nodiscard]] Names names_of(const SignView& view, const SignerState& state);
+/// Fields for who signs and the PINs; nothing where the log has no people but the name.
+void draw_signer(const SignView& view, SignerState& state, const Look& look);
+
+/// A chart with the values under the pointer, or at the cursor that the arrow keys move; Enter copies its
+/// data.
+void draw_plot(const charts::Chart& chart, float width_at_100, float height_at_100, const Look& look);
+
+// The shift's page.
 void draw_line(const LineView& view, const Look& look, Intents& out);
 void draw_readings(const ReadingsView& view, PanelState& state, const Look& look, Intents& out);
 void draw_state(const StateView& view, const Look& look);
-void draw_additions(const AdditionsView& view, const Look& look, Intents& out);
+void draw_additions(const AdditionsView& view, PanelState& state, const Look& look, Intents& out);
+void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, const Look& look, Intents& out);
 void draw_sign(const SignView& view, const AdditionsView& additions, PanelState& state, const Look& look,
                Intents& out);
-void draw_chemistry(const ChemistryView& view, const Look& look);
-void draw_shift(const ShiftView& view, const Look& look);
+void draw_chemistry(const ChemistryView& view, const SourceView& source, const Look& look, Intents& out);
+void draw_shift(const ShiftView& view, const Look& look, Intents& out);
 
-/// The whole page, laid out in the window.
+// The other pages.
+void draw_forecast(const ForecastView& view, const std::string& tank, PanelState& state, const Look& look,
+                   Intents& out);
+void draw_trends(const TrendsView& view, const std::string& tank, const Look& look);
+void draw_log(const LogView& view, PanelState& state, const Look& look, Intents& out);
+void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& state, const Look& look,
+                    Intents& out);
+void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look);
+void draw_people(const DeskView& view, PanelState& state, const Look& look, Intents& out);
+void draw_settings(const DeskView& view, PanelState& state, const Look& look, Intents& out);
+void draw_first_start(const DeskView& view, PanelState& state, const Look& look, Intents& out);
+
+/// The whole window.
 void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intents& out);
 
 }  // namespace bathwright::desktop

@@ -19,9 +19,9 @@ class ReadingsPanel {
     if (ImGui::BeginTable("burettes", 6, ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH)) {
       for (const auto& [name, weight] : {std::pair{"what", 1.1F},
                                          {"method", 1.8F},
-                                         {"sample", 0.9F},
-                                         {"titrant", 1.2F},
-                                         {"burette", 1.0F},
+                                         {"sample, mL", 0.9F},
+                                         {"titrant, mol/L", 1.2F},
+                                         {"burette, mL", 1.0F},
                                          {"is", 1.8F}})
         ImGui::TableSetupColumn(name, 0, weight);
       ImGui::PushFont(look_.fonts.caption);
@@ -55,13 +55,13 @@ class ReadingsPanel {
   }
 
   void sample() {
-    const float wide = look_.px(96);
+    const float wide = look_.px(72);
     for (const auto& [label, id, which, text] :
-         {std::tuple{"volume", "##volume", Field::volume, &view_.volume},
-          std::tuple{"temperature", "##temperature", Field::temperature, &view_.temperature},
-          std::tuple{"pH", "##pH", Field::pH, &view_.pH}}) {
+         {std::tuple{"volume, " + view_.units.volume, "##volume", Field::volume, &view_.volume},
+          std::tuple{view_.units.temperature, "##temperature", Field::temperature, &view_.temperature},
+          std::tuple{std::string("pH"), "##pH", Field::pH, &view_.pH}}) {
       ImGui::AlignTextToFramePadding();
-      ImGui::TextUnformatted(label);
+      ImGui::TextUnformatted(label.c_str());
       ImGui::SameLine();
       field(id, -1, which, *text, wide);
       ImGui::SameLine(0, look_.px(16));
@@ -69,6 +69,10 @@ class ReadingsPanel {
     if (ImGui::Button("Undo") && view_.can_undo) out_.emplace_back(UndoTyping{});
     ImGui::SameLine();
     if (ImGui::Button("Redo") && view_.can_redo) out_.emplace_back(RedoTyping{});
+    ImGui::SameLine(0, look_.px(16));
+    if (ImGui::Button("New sample")) out_.emplace_back(NewSample{});
+    if (ImGui::IsItemHovered()) ImGui::SetTooltip("puts these readings away; Undo brings them back");
+    if (!view_.sampled.empty()) quiet(look_, "first reading typed " + view_.sampled);
   }
 
   void row(int index, const ReadingRow& reading) {

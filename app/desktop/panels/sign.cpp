@@ -2,9 +2,65 @@
 // after imgui.h, which it needs
 #include <imgui_stdlib.h>
 
+#include <algorithm>
+
 #include "panels.hpp"
 
 namespace bathwright::desktop {
+
+Names names_of(const SignView& view, const SignerState& state) {
+  Names names;
+  const auto person = [&](int i) {
+    return i >= 0 && i < static_cast<int>(view.people.size()) ? view.people[static_cast<std::size_t>(i)]
+                                                              : std::string();
+  };
+  names.by = view.people.empty() ? state.name : person(state.by);
+  names.pin = state.pin;
+  names.second = person(state.second);
+  names.second_pin = state.second_pin;
+  return names;
+}
+
+void draw_signer(const SignView& view, SignerState& state, const Look& look) {
+  const float name_wide = look.px(130), pin_wide = look.px(80);
+  const auto choose = [&](const char* id, int& chosen, bool may_be_none) {
+    const std::string shown = chosen >= 0 && chosen < static_cast<int>(view.people.size())
+                                  ? view.people[static_cast<std::size_t>(chosen)]
+                                  : "nobody";
+    ImGui::SetNextItemWidth(name_wide);
+    if (!ImGui::BeginCombo(id, shown.c_str())) return;
+    if (may_be_none && ImGui::Selectable("nobody", chosen < 0)) chosen = -1;
+    for (int i = 0; i < static_cast<int>(view.people.size()); ++i)
+      if (ImGui::Selectable(view.people[static_cast<std::size_t>(i)].c_str(), i == chosen)) chosen = i;
+    ImGui::EndCombo();
+  };
+  const auto pin = [&](const char* id, std::string& text) {
+    ImGui::SameLine();
+    ImGui::SetNextItemWidth(pin_wide);
+    ImGui::InputTextWithHint(id, "PIN", &text, ImGuiInputTextFlags_Password);
+  };
+  ImGui::AlignTextToFramePadding();
+  ImGui::TextUnformatted("signs");
+  ImGui::SameLine();
+  if (view.people.empty()) {
+    ImGui::SetNextItemWidth(name_wide);
+    ImGui::InputTextWithHint("##name", view.by.c_str(), &state.name);
+    ImGui::SameLine();
+    quiet(look, "the log has no people yet: nothing is signed with a PIN");
+    return;
+  }
+  choose("##by", state.by, false);
+  pin("##pin", state.pin);
+  ImGui::SameLine(0, look.px(12));
+  ImGui::TextUnformatted("and");
+  ImGui::SameLine();
+  choose("##second", state.second, true);
+  if (state.second >= 0) pin("##second pin", state.second_pin);
+  if (!state.pin.empty() || !state.second_pin.empty()) {
+    ImGui::SameLine();
+    if (ImGui::SmallButton("forget the PINs")) state.pin.clear(), state.second_pin.clear();
+  }
+}
 
 void draw_sign(const SignView& view, const AdditionsView& additions, PanelState& state, const Look& look,
                Intents& out) {
@@ -12,29 +68,23 @@ void draw_sign(const SignView& view, const AdditionsView& additions, PanelState&
   if (!additions.verdict.empty())
     standing(look, static_cast<int>(additions.ready ? charts::State::in_window : charts::State::stop),
              additions.verdict);
-  if (ImGui::Button("Log the analysis") && view.can_log) out.emplace_back(LogAnalysis{});
-  ImGui::SameLine(0, look.px(16));
-  const auto signer = static_cast<std::size_t>(state.signer);
-  if (!view.people.empty()) {
-    ImGui::SetNextItemWidth(look.px(150));
-    if (ImGui::BeginCombo("##signer", view.people[std::min(signer, view.people.size() - 1)].c_str())) {
-      for (std::size_t i = 0; i < view.people.size(); ++i)
-        if (ImGui::Selectable(view.people[i].c_str(), i == signer)) state.signer = static_cast<int>(i);
-      ImGui::EndCombo();
-    }
+  draw_signer(view, state.signer, look);
+  const Names names = names_of(view, state.signer);
+  const bool may = !view.busy && (view.people.empty() || !names.pin.empty());
+  if (main_button(look, "Issue the slip", may && view.can_log && additions.ready))
+    out.emplace_back(IssueSlip{names});
+  ImGui::SameLine(0, look.px(12));
+  const bool may_log = may && view.can_log && !view.analysis_logged;
+  ImGui::BeginDisabled(!may_log);
+  if (ImGui::Button("Log the analysis alone") && may_log) out.emplace_back(LogAnalysis{names});
+  ImGui::EndDisabled();
+  if (view.can_log && !view.people.empty() && names.pin.empty()) {
     ImGui::SameLine();
-    ImGui::SetNextItemWidth(look.px(90));
-    ImGui::InputTextWithHint("##pin", "PIN", &state.pin, ImGuiInputTextFlags_Password);
-    ImGui::SameLine();
+    quiet(look, "a PIN is needed");
   }
-  const bool ready = additions.ready && view.can_log && (!view.needs_pin || !state.pin.empty());
-  if (main_button(look, "Sign and issue the slip", ready)) {
-    out.emplace_back(IssueSlip{
-        view.people.empty() ? view.by : view.people[std::min(signer, view.people.size() - 1)], state.pin});
-    state.pin.clear();
-  }
-  if (!view.fault.empty()) said(look, look.palette.stop, view.fault);
-  if (!view.last_logged.empty()) quiet(look, view.last_logged);
+  if (view.busy) quiet(look, "signing ...");
+  if (!view.fault.empty()) standing(look, static_cast<int>(charts::State::stop), view.fault);
+  if (!view.said.empty()) said(look, look.palette.accent, view.said);
 }
 
 }  // namespace bathwright::desktop

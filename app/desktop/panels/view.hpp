@@ -7,6 +7,8 @@
 #include <string>
 #include <vector>
 
+#include "intent.hpp"
+
 namespace bathwright::desktop {
 
 struct TankOnLine {
@@ -34,7 +36,14 @@ struct ReadingRow {
   std::string fault;   ///< what is wrong with this row and how to mend it
 };
 
+/// What a bare number means, for the heads of the fields.
+struct HeadWords {
+  std::string volume, temperature, value;
+};
+
 struct ReadingsView {
+  HeadWords units;
+  std::string sampled;                  ///< "2026-03-02 05:40"; empty: nothing typed yet
   std::string volume, temperature, pH;  ///< as typed
   std::vector<ReadingRow> rows;
   std::vector<std::string> faults;    ///< of the whole
@@ -74,25 +83,40 @@ struct AdditionsView {
   bool edited = false;
   std::vector<AdditionRow> additions;
   std::vector<StepRow> steps;
-  std::vector<std::string> refused, unmet, cautions;
+  std::vector<std::pair<std::string, std::string>> shelf;  ///< id and name of what may be added besides
+  std::vector<std::string> refused, unmet, conflicts, cautions;
   std::string chance, verdict;  ///< "ready: a second person approves" or why not
   bool ready = false, working = false;
 };
 
+/// A slip that is out: what of it is in the tank.
+struct SlipView {
+  std::int64_t number = 0;  ///< 0: none is open
+  std::string issued, approved;
+  struct Row {
+    int step = 0;
+    std::string what, how, wait, done;  ///< `done`: "entry 12, 05:52"; empty: not yet
+  };
+  std::vector<Row> steps;
+  bool all_done = false, approved_by_second = false;
+};
+
 struct SignView {
-  std::string by, last_logged;  ///< "slip 118 is open"
+  std::string by;           ///< who works, where the log has no people
+  std::string log;          ///< where it is logged
+  std::string fault, said;  ///< what came of the last signature
   std::vector<std::string> people;
-  bool can_log = false, needs_pin = false;
-  std::string fault;
+  bool can_log = false, busy = false, analysis_logged = false;
 };
 
 struct IonRow {
+  std::string id;  ///< "Ni^2+", to ask for its sources
   std::string name, molality, activity, gamma;
   double share = 0;  ///< of the largest, 0 to 1
 };
 
 struct SolidRow {
-  std::string name, working, idle;  ///< "62 kg", "-9 kg"
+  std::string id, name, working, idle;  ///< "62 kg", "-9 kg"
   double working_share = 0, idle_share = 0;
   bool forms = false;
 };
@@ -107,14 +131,81 @@ struct ChemistryView {
 };
 
 struct LogRow {
-  std::string seq, at, kind, by, words;
+  std::int64_t number = 0;
+  std::string seq, at, kind, tank, by, words;
+  double place = -1;  ///< in the shift, 0 to 1; -1: not of this shift
 };
 
 struct ShiftView {
   std::string shift, clock;
-  double elapsed = 0;  ///< of the shift, 0 to 1; below 0: no shifts are set
-  std::vector<LogRow> entries;
+  double elapsed = -1;          ///< of the shift, 0 to 1; below 0: no shifts are set
+  std::vector<LogRow> entries;  ///< of the shift, newest first
   std::vector<std::string> due, open;
+};
+
+struct LogView {
+  std::vector<LogRow> rows;  ///< newest first
+  std::string filter, file;
+  std::int64_t shown = 0;
+  std::vector<std::string> shown_text;
+  std::vector<std::string> faults;
+};
+
+struct HandOverView {
+  std::vector<std::string> text;
+  bool shifts_set = false;
+};
+
+struct LeverView {
+  std::string name, unit;
+  double value = 0, low = 0, high = 1;
+};
+
+struct LimitRow {
+  std::string name, when, span, why;
+  charts::State state = charts::State::in_window;
+};
+
+struct ForecastView {
+  std::vector<std::string> policies;
+  int policy = 0;
+  std::string from, empty;
+  std::vector<LeverView> levers;
+  std::vector<LimitRow> limits;
+  std::vector<std::pair<std::string, std::string>> figures;  ///< cost, waste, water a day; bleed that holds
+  std::vector<charts::Chart> charts;
+  std::vector<std::string> notes, faults;
+  bool working = false;
+  double progress = 0;
+};
+
+struct TrendsView {
+  std::string empty;
+  std::vector<charts::Chart> charts;
+  std::vector<std::string> findings;
+};
+
+struct BathTypeRow {
+  std::string id, version, state, file, why;
+  charts::State mark = charts::State::in_window;
+};
+
+struct PersonRow {
+  std::string name, role, signs;
+};
+
+struct SettingsView {
+  std::string folder, log;
+  std::vector<std::string> concentrations, volumes, temperatures;
+  int concentration = 0, volume = 0, temperature = 0;
+  float scale = 1;
+  bool dark = false;
+  std::string fault;
+};
+
+struct SourceView {
+  std::string species;
+  std::vector<std::string> text;
 };
 
 struct StatusView {
@@ -122,15 +213,26 @@ struct StatusView {
 };
 
 struct DeskView {
+  PageName page = PageName::shift;
+  bool first_start = false;  ///< no shop is open
+  std::string fault;         ///< of what was asked last
   LineView line;
   std::string tank_title, tank_sub;
-  std::string empty;  ///< what to do where there is nothing yet
   ReadingsView readings;
   StateView state;
   AdditionsView additions;
+  SlipView slip;
   SignView sign;
   ChemistryView chemistry;
   ShiftView shift;
+  LogView log;
+  HandOverView hand_over;
+  ForecastView forecast;
+  TrendsView trends;
+  std::vector<BathTypeRow> bath_types;
+  std::vector<PersonRow> people;
+  SettingsView settings;
+  SourceView source;
   StatusView status;
 };
 

@@ -13,7 +13,8 @@ namespace {
 
 Draft nickel_and_chloride() {
   Draft draft;
-  draft.volume = "2340 L";
+  draft.sampled = "2026-03-02T05:40:00";
+  draft.volume = "2340";
   draft.temperature = "54 degC";
   draft.pH = "4,1";
   draft.rows = {{"Ni^2+", {"edta-nickel", ""}, 0, "2.00 mL", "0.1012 mol/L", "", ""},
@@ -25,9 +26,9 @@ Draft nickel_and_chloride() {
 
 TEST_CASE("what is typed becomes the readings a file would give", "[unit][desktop]") {
   Draft draft = nickel_and_chloride();
-  draft.rows[0].burette = "23,80 mL";
+  draft.rows[0].burette = "23,80";
   std::vector<int> line_of_row;
-  const std::string text = readings_text(draft, "2026-03-02T05:40:00", line_of_row);
+  const std::string text = readings_text(draft, {}, line_of_row);
   const auto readings = shopfiles::read_readings_text("typed", text);
   INFO(text);
   REQUIRE(readings);
@@ -42,18 +43,18 @@ TEST_CASE("what is typed becomes the readings a file would give", "[unit][deskto
 TEST_CASE("a row not read yet is left out, a wrong one is named by its line", "[unit][desktop]") {
   Draft draft = nickel_and_chloride();
   std::vector<int> line_of_row;
-  CHECK(shopfiles::read_readings_text("typed", readings_text(draft, "", line_of_row))->titrations.empty());
+  CHECK(shopfiles::read_readings_text("typed", readings_text(draft, {}, line_of_row))->titrations.empty());
   CHECK(line_of_row[0] == 0);
   draft.rows[0].burette = "23.80 \"\\";
-  const auto readings = shopfiles::read_readings_text("typed", readings_text(draft, "", line_of_row));
+  const auto readings = shopfiles::read_readings_text("typed", readings_text(draft, {}, line_of_row));
   REQUIRE_FALSE(readings);
   CHECK(readings.problems().front().where.find("typed:" + std::to_string(line_of_row[0] + 5)) == 0);
 }
 
 TEST_CASE("typing on in one field is one step of undo", "[unit][desktop]") {
   DraftHistory history(nickel_and_chloride());
-  for (const char* text : {"2", "23", "23.8"}) history.type({0, Field::burette, text});
-  history.type({-1, Field::pH, "4.2"});
+  for (const char* text : {"2", "23", "23.8"}) history.type({0, Field::burette, text}, "");
+  history.type({-1, Field::pH, "4.2"}, "");
   CHECK(history.now().rows[0].burette == "23.8");
   history.undo();
   CHECK(history.now().pH == "4,1");
@@ -63,7 +64,7 @@ TEST_CASE("typing on in one field is one step of undo", "[unit][desktop]") {
   CHECK_FALSE(history.can_undo());
   history.redo();
   CHECK(history.now().rows[0].burette == "23.8");
-  history.type({0, Field::burette, "9"});
+  history.type({0, Field::burette, "9"}, "");
   CHECK_FALSE(history.can_redo());
 }
 

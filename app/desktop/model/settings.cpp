@@ -1,0 +1,39 @@
+#include "settings.hpp"
+
+#include <algorithm>
+#include <fstream>
+#include <iterator>
+#include <nlohmann/json.hpp>
+
+#include "whole_file.hpp"
+
+namespace bathwright::desktop {
+
+using Json = nlohmann::json;
+
+Settings kept_settings(const std::filesystem::path& file) {
+  Settings settings;
+  std::ifstream in(file, std::ios::binary);
+  const Json kept = Json::parse(std::string(std::istreambuf_iterator<char>(in), {}), nullptr, false);
+  if (!kept.is_object()) return settings;
+  const auto text = [&](const char* key, std::string otherwise) {
+    return kept.contains(key) && kept[key].is_string() ? kept[key].get<std::string>() : otherwise;
+  };
+  settings.shop = text("shop", "");
+  settings.concentration = text("concentration", settings.concentration);
+  settings.volume = text("volume", settings.volume);
+  settings.temperature = text("temperature", settings.temperature);
+  if (kept.contains("scale") && kept["scale"].is_number())
+    settings.scale = std::clamp(kept["scale"].get<float>(), 0.0F, 2.0F);
+  settings.dark = kept.contains("dark") && kept["dark"] == true;
+  return settings;
+}
+
+Outcome keep(const std::filesystem::path& file, const Settings& settings) {
+  const Json kept = {{"shop", settings.shop.string()}, {"scale", settings.scale},
+                     {"dark", settings.dark},          {"concentration", settings.concentration},
+                     {"volume", settings.volume},      {"temperature", settings.temperature}};
+  return write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
+}
+
+}  // namespace bathwright::desktop

@@ -1,0 +1,211 @@
+// Pages of a few lines each: trends, hand-over, bath types, people, settings, the first start.
+#include <imgui.h>
+// after imgui.h, which it needs
+#include <imgui_stdlib.h>
+
+#include <array>
+
+#include "panels.hpp"
+
+namespace bathwright::desktop {
+namespace {
+
+void page_title(const Look& look, const std::string& words) {
+  ImGui::PushFont(look.fonts.heading);
+  ImGui::TextUnformatted(words.c_str());
+  ImGui::PopFont();
+}
+
+void came_of_it(const SignView& sign, const Look& look) {
+  if (sign.busy) quiet(look, "signing ...");
+  if (!sign.fault.empty()) standing(look, static_cast<int>(charts::State::stop), sign.fault);
+  if (!sign.said.empty()) said(look, look.palette.accent, sign.said);
+}
+
+bool choose(const char* label, const std::vector<std::string>& all, int& chosen, const Look& look) {
+  ImGui::SetNextItemWidth(look.px(160));
+  bool changed = false;
+  if (ImGui::BeginCombo(label, all[static_cast<std::size_t>(chosen)].c_str())) {
+    for (int i = 0; i < static_cast<int>(all.size()); ++i)
+      if (ImGui::Selectable(all[static_cast<std::size_t>(i)].c_str(), i == chosen))
+        chosen = i, changed = true;
+    ImGui::EndCombo();
+  }
+  return changed;
+}
+
+}  // namespace
+
+void draw_trends(const TrendsView& view, const std::string& tank, const Look& look) {
+  page_title(look, tank + ": trends");
+  if (!view.empty.empty()) {
+    said(look, look.palette.ink, view.empty);
+    return;
+  }
+  for (const std::string& finding : view.findings)
+    standing(look, static_cast<int>(charts::State::act), finding);
+  constexpr float height = 220;
+  const float width = ImGui::GetContentRegionAvail().x / look.scale;
+  for (const charts::Chart& chart : view.charts) draw_plot(chart, width, height, look);
+}
+
+void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& state, const Look& look,
+                    Intents& out) {
+  page_title(look, "Hand over");
+  if (!view.shifts_set) {
+    said(look, look.palette.ink,
+         "No shifts are set in this log. Settings has them; then this page tells the next shift "
+         "what it must know first.");
+    return;
+  }
+  draw_signer(sign, state.signer, look);
+  const Names names = names_of(sign, state.signer);
+  const bool may = !sign.busy && (sign.people.empty() || !names.pin.empty());
+  if (main_button(look, "Sign and hand over", may)) out.emplace_back(HandOver{names});
+  came_of_it(sign, look);
+  ImGui::Separator();
+  for (const std::string& line : view.text) said(look, look.palette.ink, line.empty() ? " " : line);
+}
+
+void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look) {
+  page_title(look, "Bath types");
+  quiet(
+      look,
+      "One plugin file each. What is not allowed has not run; bathwright plugins allow FILE allows it after you "
+      "have read it.");
+  if (!ImGui::BeginTable("types", 5, ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH))
+    return;
+  for (const auto& [name, weight] :
+       {std::pair{"bath type", 1.6F}, {"version", 0.6F}, {"state", 0.8F}, {"file", 1.8F}, {"why", 3.0F}})
+    ImGui::TableSetupColumn(name, 0, weight);
+  ImGui::TableHeadersRow();
+  for (const BathTypeRow& row : rows) {
+    ImGui::TableNextRow();
+    ImGui::TableNextColumn();
+    ImGui::TextUnformatted(row.id.c_str());
+    ImGui::TableNextColumn();
+    ImGui::TextUnformatted(row.version.c_str());
+    ImGui::TableNextColumn();
+    standing(look, static_cast<int>(row.mark), row.state);
+    ImGui::TableNextColumn();
+    ImGui::TextUnformatted(row.file.c_str());
+    ImGui::TableNextColumn();
+    said(look, look.palette.stop, row.why);
+  }
+  ImGui::EndTable();
+}
+
+void draw_people(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  page_title(look, "People");
+  if (view.people.empty())
+    said(look, look.palette.ink,
+         "The log has no people: everybody may write, and nothing is signed. To begin, the "
+         "chemist signs up first; from then on every entry is signed with a PIN.");
+  else if (ImGui::BeginTable("people", 3,
+                             ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH)) {
+    for (const char* name : {"name", "role", "signs"}) ImGui::TableSetupColumn(name);
+    ImGui::TableHeadersRow();
+    for (const PersonRow& person : view.people) {
+      ImGui::TableNextRow();
+      for (const std::string* text : {&person.name, &person.role, &person.signs}) {
+        ImGui::TableNextColumn();
+        ImGui::TextUnformatted(text->c_str());
+      }
+    }
+    ImGui::EndTable();
+  }
+  heading(look, view.people.empty() ? "Sign up" : "Admit somebody");
+  ImGui::SetNextItemWidth(look.px(200));
+  ImGui::InputTextWithHint("##new name", "name", &state.new_name);
+  ImGui::SameLine();
+  static const std::vector<std::string> roles{"chemist", "operator", "auditor"};
+  choose("##role", roles, state.new_role, look);
+  ImGui::SameLine();
+  ImGui::SetNextItemWidth(look.px(90));
+  ImGui::InputTextWithHint("##new pin", "new PIN", &state.new_pin, ImGuiInputTextFlags_Password);
+  if (!view.people.empty()) draw_signer(view.sign, state.signer, look);
+  const Names names = names_of(view.sign, state.signer);
+  const bool may = !view.sign.busy && !state.new_name.empty() && !state.new_pin.empty() &&
+                   (view.people.empty() || !names.pin.empty());
+  if (main_button(look, "Admit", may)) {
+    out.emplace_back(
+        AdmitPerson{state.new_name, roles[static_cast<std::size_t>(state.new_role)], state.new_pin, names});
+    state.new_name.clear();
+    state.new_pin.clear();
+  }
+  came_of_it(view.sign, look);
+}
+
+void draw_settings(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  const SettingsView& settings = view.settings;
+  page_title(look, "Settings");
+  heading(look, "The shop");
+  quiet(look, "tank files: " + settings.folder);
+  quiet(look, "log: " + settings.log);
+  ImGui::SetNextItemWidth(look.px(420));
+  ImGui::InputTextWithHint("##folder", "another folder of tank files", &state.folder);
+  ImGui::SameLine();
+  ImGui::BeginDisabled(state.folder.empty());
+  if (ImGui::Button("Open this folder") && !state.folder.empty()) out.emplace_back(OpenFolder{state.folder});
+  ImGui::EndDisabled();
+  ImGui::SameLine();
+  if (ImGui::Button("Open the demonstration shop")) out.emplace_back(OpenDemonstration{});
+  heading(look, "Units that are shown");
+  SetUnits chosen{settings.concentration, settings.volume, settings.temperature};
+  bool changed = choose("concentrations", settings.concentrations, chosen.concentration, look);
+  changed = choose("volumes", settings.volumes, chosen.volume, look) || changed;
+  changed = choose("temperatures", settings.temperatures, chosen.temperature, look) || changed;
+  if (changed) out.emplace_back(chosen);
+  quiet(look, "Any unit may be typed. A bare number has the unit its field is headed with.");
+  heading(look, "Look");
+  for (const auto& [words, scale] :
+       {std::pair{"100 %", 1.0F}, {"125 %", 1.25F}, {"150 %", 1.5F}, {"200 %", 2.0F}}) {
+    if (scale > 1) ImGui::SameLine();
+    const float now = settings.scale > 0 ? settings.scale : look.scale;
+    if (ImGui::RadioButton(words, std::abs(now - scale) < 0.01F))
+      out.emplace_back(SetLook{scale, settings.dark});
+  }
+  bool dark = settings.dark;
+  if (ImGui::Checkbox("dark page", &dark)) out.emplace_back(SetLook{settings.scale, dark});
+  heading(look, "Shifts");
+  quiet(look, view.hand_over.shifts_set ? "Set: " + view.shift.shift : "None are set.");
+  static const std::vector<std::string> patterns{"3x8", "2x12"};
+  choose("##pattern", patterns, state.pattern, look);
+  ImGui::SameLine();
+  ImGui::SetNextItemWidth(look.px(200));
+  ImGui::InputTextWithHint("##zone", "time zone, Europe/Berlin", &state.zone);
+  draw_signer(view.sign, state.signer, look);
+  const bool may = !view.sign.busy && !state.zone.empty();
+  if (main_button(look, "Set the shifts", may))
+    out.emplace_back(SetShifts{patterns[static_cast<std::size_t>(state.pattern)], state.zone,
+                               names_of(view.sign, state.signer)});
+  came_of_it(view.sign, look);
+}
+
+void draw_first_start(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  ImGui::Dummy({0, look.px(40)});
+  ImGui::PushFont(look.fonts.large);
+  ImGui::TextUnformatted("Bathwright");
+  ImGui::PopFont();
+  said(look, look.palette.ink,
+       "From the readings of a tank to an addition sheet that is safe on the way; what builds up, "
+       "and how much to bleed; a log that nobody can change.");
+  ImGui::Dummy({0, look.px(12)});
+  if (main_button(look, "Open the demonstration shop", true)) out.emplace_back(OpenDemonstration{});
+  quiet(look, "An invented shop of 28 tanks with a log of its own. Nothing in it can do harm.");
+  ImGui::Dummy({0, look.px(12)});
+  ImGui::SetNextItemWidth(look.px(420));
+  ImGui::InputTextWithHint("##folder", "the folder of your tank files", &state.folder);
+  ImGui::SameLine();
+  ImGui::BeginDisabled(state.folder.empty());
+  if (ImGui::Button("Open this folder") && !state.folder.empty()) out.emplace_back(OpenFolder{state.folder});
+  ImGui::EndDisabled();
+  if (!view.fault.empty()) standing(look, static_cast<int>(charts::State::stop), view.fault);
+  ImGui::Dummy({0, look.px(12)});
+  quiet(
+      look,
+      "The figures here help a trained person decide. Safety data sheets, local codes and licensed practice come "
+      "first, always.");
+}
+
+}  // namespace bathwright::desktop
