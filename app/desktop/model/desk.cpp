@@ -432,6 +432,15 @@ bool Desk::update() {
   if (auto answer = tank_job_.take()) {
     changed_ = true;
     if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)]) {
+      if (!answer->now && worked_ && worked_->now) {
+        // What cannot be read as it stands takes the plans away, and leaves the tank as it was last known.
+        answer->now = worked_->now;
+        answer->shop = worked_->shop;
+        answer->read = sheets::StateRead{"as it was before: the readings cannot be read as they stand",
+                                         worked_->shop->tank.temperature,
+                                         worked_->now->pH,
+                                         {}};
+      }
       worked_ = std::move(answer);
       if (worked_->shop && !draft_) {
         blank_ = blank_draft(worked_->shop->tank, worked_->shop->type());

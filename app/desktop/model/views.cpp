@@ -8,6 +8,7 @@
 #include <bathwright/units/show.hpp>
 #include <chrono>
 #include <cmath>
+#include <set>
 
 namespace bathwright::desktop {
 namespace {
@@ -50,6 +51,37 @@ std::string without_place(const Problem& problem) {
   return told.text();
 }
 
+/// A sentence with its formulae as people see them.
+std::string pretty_words(const std::string& sentence) {
+  std::string out, word;
+  const auto end_word = [&] {
+    std::string tail;
+    while (!word.empty() && (word.back() == ':' || word.back() == ',' || word.back() == ';'))
+      tail.insert(tail.begin(), word.back()), word.pop_back();
+    const bool may_be_formula = !word.empty() && word.front() >= 'A' && word.front() <= 'Z' &&
+                                word.find_first_of("0123456789^") != std::string::npos;
+    out += (may_be_formula ? pretty(word) : word) + tail;
+    word.clear();
+  };
+  for (const char c : sentence) {
+    if (c == ' ') {
+      end_word();
+      out += c;
+    } else {
+      word += c;
+    }
+  }
+  end_word();
+  return out;
+}
+
+/// "edta nickel" of the id "edta-nickel".
+std::string method_words(std::string id) {
+  if (id.empty()) return "a concentration";
+  std::ranges::replace(id, '-', ' ');
+  return id;
+}
+
 std::string room_words(double kg, double log10_room, bool covered) {
   if (!covered) return "";
   if (std::isfinite(kg)) return units::significant(kg, 2) + " kg";
@@ -67,15 +99,15 @@ const dosing::Plan* shown_plan(const Worked& worked, int plan) {
 ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row, const Worked* worked,
                            const Units& units) {
   ReadingsView view;
-  view.sampled = draft.sampled;
+  view.sampled = draft.sampled.substr(0, draft.sampled.rfind(':'));
+  std::ranges::replace(view.sampled, 'T', ' ');
   view.volume = draft.volume;
   view.temperature = draft.temperature;
   view.pH = draft.pH;
   for (const DraftRow& row : draft.rows) {
     ReadingRow shown;
     shown.quantity = pretty(row.quantity);
-    for (const std::string& method : row.methods)
-      shown.methods.push_back(method.empty() ? "as a concentration" : method);
+    for (const std::string& method : row.methods) shown.methods.push_back(method_words(method));
     shown.method = row.method;
     shown.sample = row.sample;
     shown.titrant = row.titrant;
@@ -103,7 +135,7 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
   }
   if (worked->analysed) {
     for (const auto& suspect : worked->analysed->analysis.suspects)
-      view.suspects.push_back(suspect.what + ": " + suspect.reason + " " + suspect.try_this);
+      view.suspects.push_back(pretty_words(suspect.what + ": " + suspect.reason + " " + suspect.try_this));
     for (const std::string& change : worked->analysed->changed_since) view.suspects.push_back(change);
   }
   return view;
@@ -172,6 +204,7 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     row.cost = money(addition.amount > 0 ? addition.cost * row.amount / addition.amount : 0);
     view.additions.push_back(std::move(row));
   }
+  std::set<std::string> told;  // what to look at is said once, at the step it begins with
   for (const dosing::Step& step : plan->steps) {
     StepRow row;
     row.number = std::to_string(step.number);
@@ -186,8 +219,8 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     row.then += units.volume(step.predicted.volume_L);
     if (step.wait_h > 0) row.wait = "wait " + figure(step.wait_h, 2) + " h, stirred";
     for (const dosing::Check& check : step.checks) {
-      if (check.ok) continue;
-      (check.stops ? row.stops : row.watch).push_back(check.name + ": " + check.detail);
+      if (check.ok || (!check.stops && !told.insert(check.name).second)) continue;
+      (check.stops ? row.stops : row.watch).push_back(pretty_words(check.name + ": " + check.detail));
     }
     row.checks = static_cast<int>(step.checks.size());
     row.refused = !row.stops.empty();
@@ -195,7 +228,7 @@ AdditionsView additions_view(const Worked& worked, int chosen,
   }
   const dosing::AdditionSheet& sheet = worked.own ? *worked.own : *worked.sheet;
   for (const dosing::Refusal& refusal : sheet.refused)
-    view.refused.push_back(refusal.reason + " (" + refusal.rule + ")");
+    view.refused.push_back(pretty_words(refusal.reason + " (" + refusal.rule + ")"));
   view.cautions = sheet.cautions;
   view.unmet = plan->unmet;
   if (plan->chances)
@@ -270,7 +303,7 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
       view.path.push_back(std::move(rooms));
     }
   }
-  view.doubts = now.warnings;
+  for (const std::string& warning : now.warnings) view.doubts.push_back(pretty_words(warning));
   return view;
 }
 

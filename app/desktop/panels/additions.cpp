@@ -3,7 +3,7 @@
 namespace bathwright::desktop {
 namespace {
 
-void draw_amounts(const AdditionsView& view, Intents& out) {
+void draw_amounts(const AdditionsView& view, const Look& look, Intents& out) {
   if (!ImGui::BeginTable("amounts", 3, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] : {std::pair{"chemical", 1.6F}, {"amount", 2.4F}, {"cost", 0.8F}})
     ImGui::TableSetupColumn(name, 0, weight);
@@ -15,12 +15,22 @@ void draw_amounts(const AdditionsView& view, Intents& out) {
     ImGui::TextUnformatted(row.chemical.c_str());
     ImGui::TableNextColumn();
     ImGui::PushID(static_cast<int>(i));
-    ImGui::SetNextItemWidth(-1);
     double amount = row.amount;
     const double least = 0;
-    const std::string form = (row.largest < 10 ? "%.3f " : "%.2f ") + row.unit;
-    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, form.c_str()))
-      out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
+    bool changed = false;
+    ImGui::SetNextItemWidth(look.px(84));
+    // Typed amounts count when the field is left or Enter pressed: half a number is no amount.
+    if (ImGui::InputDouble("##typed", &amount, 0, 0, row.largest < 10 ? "%.3f" : "%.2f"))
+      changed =
+          ImGui::IsItemDeactivatedAfterEdit() || ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_Enter));
+    changed = changed || ImGui::IsItemDeactivatedAfterEdit();
+    ImGui::SameLine();
+    ImGui::TextUnformatted(row.unit.c_str());
+    ImGui::SameLine(look.px(120));
+    ImGui::SetNextItemWidth(-1);
+    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, ""))
+      changed = true;
+    if (changed) out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
     ImGui::PopID();
     ImGui::TableNextColumn();
     ImGui::AlignTextToFramePadding();
@@ -74,7 +84,7 @@ void draw_additions(const AdditionsView& view, PanelState& state, const Look& lo
     ImGui::SameLine();
     if (ImGui::SmallButton("back to the plan")) out.emplace_back(BackToPlan{});
   }
-  draw_amounts(view, out);
+  draw_amounts(view, look, out);
   draw_add(view, state, look, out);
   if (!view.chance.empty()) quiet(look, view.chance);
   for (const std::string& unmet : view.unmet) standing(look, static_cast<int>(charts::State::act), unmet);
