@@ -130,6 +130,7 @@ void Desk::handle(const Intent& intent) {
       Overloaded{[&](const GoTo& to) {
                    view_.page = to.page;
                    fault_.clear();
+                   said_.clear();
                    if (to.page == PageName::forecast && !forecasted_) ask_forecast();
                    if (to.page == PageName::bath_types) list_bath_types();
                  },
@@ -259,15 +260,15 @@ void Desk::drag(const DragAmount& drag) {
   begin_edit();
   if (drag.addition < 0 || drag.addition >= static_cast<int>(edited_.size())) return;
   auto& [id, kg] = edited_[static_cast<std::size_t>(drag.addition)];
-  const bath::ShelfItem* item = tank()->on_shelf(id);
-  if (!item) return;
-  kg = item->stock.liquid ? drag.amount * item->stock.kg_per_L : drag.amount;
+  const matter::StockChemical* stock = stock_of(*tank(), id);
+  if (!stock) return;
+  kg = stock->liquid ? drag.amount * stock->kg_per_L : drag.amount;
   ask();
 }
 
 void Desk::add_chemical(const std::string& chemical) {
   const bath::Tank* open = tank();
-  if (!open || !open->on_shelf(chemical) || !worked_ || !worked_->sheet) return;
+  if (!open || !stock_of(*open, chemical) || !worked_ || !worked_->sheet) return;
   begin_edit();
   constexpr double first_kg = 1;  // something to drag from
   edited_.emplace_back(chemical, first_kg);

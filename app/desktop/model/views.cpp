@@ -194,15 +194,29 @@ AdditionsView additions_view(const Worked& worked, int chosen,
         one.kind + ", " + money(one.cost) +
         (one.chances ? ", " + fixed(100 * one.chances->in_every_window, 0) + " %" : std::string()));
   for (const bath::ShelfItem& item : tank.shelf) view.shelf.emplace_back(item.stock.id, item.stock.name);
+  for (const std::string& id : matter::StockCatalogue::built_in().ids())
+    if (!tank.on_shelf(id))
+      view.shelf.emplace_back(id, stock_of(tank, id)->name + " (not on this tank's shelf)");
   const dosing::Plan& planned =
       worked.sheet->plans[std::min(static_cast<std::size_t>(chosen), worked.sheet->plans.size() - 1)];
-  for (const dosing::Addition& addition : planned.additions) {
-    AdditionRow row{addition.name, addition.unit, addition.amount, 2 * addition.amount, ""};
-    const double per_kg = addition.kg > 0 ? addition.amount / addition.kg : 1;
-    for (const auto& [id, kg] : edited)
-      if (id == addition.chemical) row.amount = kg * per_kg;
-    row.cost = money(addition.amount > 0 ? addition.cost * row.amount / addition.amount : 0);
-    view.additions.push_back(std::move(row));
+  const auto planned_amount = [&](const std::string& id) {
+    const auto addition = std::ranges::find(planned.additions, id, &dosing::Addition::chemical);
+    return addition == planned.additions.end() ? 0 : addition->amount;
+  };
+  const auto cost_of = [&](const std::string& id) {
+    const auto addition = std::ranges::find(plan->additions, id, &dosing::Addition::chemical);
+    return addition == plan->additions.end() ? std::string() : money(addition->cost);
+  };
+  if (edited.empty())
+    for (const dosing::Addition& addition : planned.additions)
+      view.additions.push_back(
+          {addition.name, addition.unit, addition.amount, 2 * addition.amount, money(addition.cost)});
+  for (const auto& [id, kg] : edited) {
+    const matter::StockChemical* stock = stock_of(tank, id);
+    const double amount = stock->liquid ? kg / stock->kg_per_L : kg, planned_one = planned_amount(id);
+    constexpr double usual = 25;  // a bag
+    view.additions.push_back({stock->name, stock->liquid ? "L" : "kg", amount,
+                              planned_one > 0 ? 2 * planned_one : std::max(usual, amount), cost_of(id)});
   }
   std::set<std::string> told;  // what to look at is said once, at the step it begins with
   for (const dosing::Step& step : plan->steps) {
@@ -464,14 +478,15 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   view.from = "from " + told.from;
   const Levers& levers = told.levers;
   constexpr double longest_horizon = 730;
-  view.levers = {{"bleed", "L/day", levers.bleed_L_per_day, 0, 0},
-                 {"drag-out", "times the policy's", levers.drag_out, 0.2, 3},
-                 {"work", "times the policy's", levers.load, 0, 3},
-                 {"horizon", "days", static_cast<double>(levers.horizon_days), 14, longest_horizon}};
+  view.levers = {{"bleed", units.volume(levers.bleed_L_per_day) + "/day", levers.bleed_L_per_day, 0, 0},
+                 {"drag-out", figure(levers.drag_out, 3) + " times", levers.drag_out, 0.2, 3},
+                 {"work", figure(levers.load, 3) + " times", levers.load, 0, 3},
+                 {"horizon", std::to_string(levers.horizon_days) + " days",
+                  static_cast<double>(levers.horizon_days), 14, longest_horizon}};
   for (std::size_t i = 0; i < told.limits.size(); ++i) {
     const auto& limit = told.limits[i];
     LimitRow row;
-    row.name = pretty(limit.name);
+    row.name = pretty_words(limit.name);
     row.why = std::string(forecast::name(limit.cause));
     if (limit.day) {
       row.state = charts::State::act;
@@ -479,8 +494,8 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
       if (told.sampled && limit.day_p05 && limit.day_p95)
         row.span = fixed(*limit.day_p05, 0) + " to " + fixed(*limit.day_p95, 0);
     } else {
-      row.when =
-          limit.share > 0 ? fixed(100 * limit.share, 0) + " % of the samples" : "not within the horizon";
+      row.when = limit.share > 0 ? fixed(100 * limit.share, 0) + " % of the samples"
+                                 : "not in " + std::to_string(levers.horizon_days) + " days";
     }
     view.limits.push_back(std::move(row));
   }

@@ -17,19 +17,14 @@ void draw_amounts(const AdditionsView& view, const Look& look, Intents& out) {
     ImGui::PushID(static_cast<int>(i));
     double amount = row.amount;
     const double least = 0;
-    bool changed = false;
     ImGui::SetNextItemWidth(look.px(84));
-    // Typed amounts count when the field is left or Enter pressed: half a number is no amount.
-    if (ImGui::InputDouble("##typed", &amount, 0, 0, row.largest < 10 ? "%.3f" : "%.2f"))
-      changed =
-          ImGui::IsItemDeactivatedAfterEdit() || ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_Enter));
-    changed = changed || ImGui::IsItemDeactivatedAfterEdit();
-    ImGui::SameLine();
-    ImGui::TextUnformatted(row.unit.c_str());
+    bool changed = ImGui::InputDouble("##typed", &amount, 0, 0, row.largest < 10 ? "%.3f" : "%.2f");
+    note_place(look, "amount " + row.chemical);
     ImGui::SameLine(look.px(120));
     ImGui::SetNextItemWidth(-1);
     if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, ""))
       changed = true;
+    note_place(look, "slider " + row.chemical);
     if (changed) out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
     ImGui::PopID();
     ImGui::TableNextColumn();
@@ -58,13 +53,19 @@ void draw_add(const AdditionsView& view, PanelState& state, const Look& look, In
   if (view.shelf.empty()) return;
   const auto chosen = std::min(static_cast<std::size_t>(state.add), view.shelf.size() - 1);
   ImGui::SetNextItemWidth(look.px(240));
-  if (ImGui::BeginCombo("##shelf", view.shelf[chosen].second.c_str())) {
-    for (std::size_t i = 0; i < view.shelf.size(); ++i)
+  const bool open =
+      ImGui::BeginCombo("##shelf", view.shelf[chosen].second.c_str(), ImGuiComboFlags_HeightLarge);
+  note_place(look, "shelf");
+  if (open) {
+    note_window(look, "shelf list");
+    for (std::size_t i = 0; i < view.shelf.size(); ++i) {
       if (ImGui::Selectable(view.shelf[i].second.c_str(), i == chosen)) state.add = static_cast<int>(i);
+      note_place(look, "shelf " + view.shelf[i].first);
+    }
     ImGui::EndCombo();
   }
   ImGui::SameLine();
-  if (ImGui::Button("Add it to the list")) out.emplace_back(AddChemical{view.shelf[chosen].first});
+  if (button(look, "Add it to the list")) out.emplace_back(AddChemical{view.shelf[chosen].first});
 }
 
 }  // namespace
@@ -78,11 +79,12 @@ void draw_additions(const AdditionsView& view, PanelState& state, const Look& lo
   for (std::size_t i = 0; i < view.plans.size(); ++i) {
     if (ImGui::RadioButton(view.plans[i].c_str(), static_cast<int>(i) == view.plan && !view.edited))
       out.emplace_back(ChoosePlan{static_cast<int>(i)});
+    note_place(look, "plan " + std::to_string(i + 1));
   }
   if (view.edited) {
     said(look, look.palette.act, "amounts changed by hand");
     ImGui::SameLine();
-    if (ImGui::SmallButton("back to the plan")) out.emplace_back(BackToPlan{});
+    if (button(look, "Back to the plan")) out.emplace_back(BackToPlan{});
   }
   draw_amounts(view, look, out);
   draw_add(view, state, look, out);

@@ -19,7 +19,7 @@ void draw_pages(const DeskView& view, const Look& look, Intents& out) {
     ImGui::PushFont(open ? look.fonts.bold : look.fonts.body);
     ImGui::PushStyleColor(ImGuiCol_Button, colour(look.palette.page));
     ImGui::PushStyleColor(ImGuiCol_Text, colour(open ? look.palette.accent : look.palette.ink));
-    if (ImGui::Button(words)) out.emplace_back(GoTo{page});
+    if (button(look, words)) out.emplace_back(GoTo{page});
     ImGui::PopStyleColor(2);
     ImGui::PopFont();
     const ImVec2 low = ImGui::GetItemRectMin(), high = ImGui::GetItemRectMax();

@@ -10,6 +10,7 @@ void draw_tank(const TankOnLine& tank, int index, bool selected, const Look& loo
   const ImVec2 corner = ImGui::GetCursorPos();
   const float row = look.px(height + 16);
   if (ImGui::Selectable("##open", selected, 0, {0, row})) out.emplace_back(OpenTank{index});
+  note_place(look, "tank " + tank.name);
   ImGui::SetCursorPos({corner.x + look.px(8), corner.y + look.px(8)});
   DrawListCanvas canvas = drawing_room(look, width, height);
   draw_vessel(canvas, {2, 2, width - 4, height - 4}, tank.vessel, look.palette);

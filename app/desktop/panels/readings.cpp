@@ -54,6 +54,8 @@ class ReadingsPanel {
     } else if (mine) {
       typing_ = {};
     }
+    note_place(look_, std::string(id + 2) +
+                          (row < 0 ? "" : " " + view_.rows[static_cast<std::size_t>(row)].quantity));
     ImGui::PopID();
     if (changed) out_.emplace_back(TypeReading{row, which, shown});
   }
@@ -71,11 +73,11 @@ class ReadingsPanel {
             which == Field::volume ? "or 3 cm low" : "");
       ImGui::SameLine(0, look_.px(16));
     }
-    if (ImGui::Button("Undo") && view_.can_undo) out_.emplace_back(UndoTyping{});
+    if (button(look_, "Undo", view_.can_undo)) out_.emplace_back(UndoTyping{});
     ImGui::SameLine();
-    if (ImGui::Button("Redo") && view_.can_redo) out_.emplace_back(RedoTyping{});
+    if (button(look_, "Redo", view_.can_redo)) out_.emplace_back(RedoTyping{});
     ImGui::SameLine(0, look_.px(16));
-    if (ImGui::Button("New sample")) out_.emplace_back(NewSample{});
+    if (button(look_, "New sample")) out_.emplace_back(NewSample{});
     if (ImGui::IsItemHovered()) ImGui::SetTooltip("puts these readings away; Undo brings them back");
     // Always a line, so that nothing moves under the pointer with the first letter.
     quiet(look_, view_.sampled.empty() ? "nothing typed yet" : "sample of " + view_.sampled);
