@@ -92,8 +92,10 @@ void draw_additions(const AdditionsView& view, PanelState& state, const Look& lo
   for (const std::string& unmet : view.unmet) standing(look, static_cast<int>(charts::State::act), unmet);
   for (const std::string& conflict : view.conflicts)
     standing(look, static_cast<int>(charts::State::act), conflict);
-  for (const std::string& refused : view.refused)
+  for (const std::string& refused : view.refused) {
     standing(look, static_cast<int>(charts::State::stop), refused);
+    note_place(look, "refused");
+  }
   for (std::size_t i = 0; i < view.steps.size(); ++i) draw_step(view.steps[i], static_cast<int>(i), look);
   if (!view.cautions.empty() && ImGui::TreeNodeEx("Handling cautions", ImGuiTreeNodeFlags_DefaultOpen)) {
     for (const std::string& caution : view.cautions) said(look, look.palette.ink, caution);

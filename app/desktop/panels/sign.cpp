@@ -48,6 +48,7 @@ void draw_signer(const SignView& view, SignerState& state, const Look& look) {
   if (view.people.empty()) {
     ImGui::SetNextItemWidth(name_wide);
     ImGui::InputTextWithHint("##name", view.by.c_str(), &state.name);
+    note_place(look, "signer name");
     ImGui::SameLine();
     quiet(look, "the log has no people yet: nothing is signed with a PIN");
     return;

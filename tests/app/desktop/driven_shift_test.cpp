@@ -85,7 +85,7 @@ TEST_CASE("a shift's work at the window", "[desktop][window]") {
   driver.click("Add it to the list");
   REQUIRE(driver.until([&] { return !driver.view().additions.refused.empty() && !driver.desk().working(); }));
   CHECK_FALSE(driver.view().additions.ready);
-  driver.pictures(3);
+  driver.bring_into_sight("refused");
   CHECK(driver.pixels_of(charts::day_palette.stop) > before);
   driver.click("Issue the slip");
   driver.pictures(5);
@@ -96,6 +96,11 @@ TEST_CASE("a shift's work at the window", "[desktop][window]") {
   driver.click("Issue the slip");
   REQUIRE(driver.until([&] { return driver.view().slip.number > 0 && !driver.desk().working(); }));
   const std::int64_t slip = driver.view().slip.number;
+  // Who made it may not stand for it as well.
+  driver.click("I have read it and stand for it");
+  REQUIRE(driver.until([&] { return !driver.view().sign.fault.empty() && !driver.desk().working(); }));
+  CHECK_FALSE(driver.view().slip.approved_by_second);
+  driver.put("signer name", "M. Roth");
   driver.click("I have read it and stand for it");
   REQUIRE(driver.until([&] { return driver.view().slip.approved_by_second && !driver.desk().working(); }));
   const std::size_t steps = driver.view().slip.steps.size();

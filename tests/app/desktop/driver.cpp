@@ -22,6 +22,13 @@ using Clock = std::chrono::steady_clock;
 
 namespace {
 
+bool is_page(const std::string& name) {
+  for (const char* page :
+       {"The shift", "Forecast", "Trends", "Log", "Hand over", "Bath types", "People", "Settings"})
+    if (name == page) return true;
+  return false;
+}
+
 double ms_since(Clock::time_point begin) {
   return std::chrono::duration<double, std::milli>(Clock::now() - begin).count();
 }
@@ -102,7 +109,10 @@ void Driver::pictures(int count) {
 bool Driver::until(const std::function<bool()>& holds, double seconds) {
   const auto begin = Clock::now();
   while (!holds()) {
-    if (ms_since(begin) > 1000 * seconds) return false;
+    if (ms_since(begin) > 1000 * seconds) {
+      save(std::filesystem::temp_directory_path() / "waited-in-vain.png");
+      return false;
+    }
     picture();
     std::this_thread::sleep_for(std::chrono::milliseconds(5));
   }
@@ -126,23 +136,24 @@ void Driver::bring_into_sight(const std::string& name, const std::string& list) 
   constexpr unsigned wheel_up = 4, wheel_down = 5;
   constexpr int most_turns = 400;
   for (int turn = 0; turn < most_turns; ++turn) {
-    const auto place = places_.find(name);
-    if (place == places_.end()) throw std::runtime_error("\"" + name + "\" is not drawn");
+    if (!places_.contains(name)) throw std::runtime_error("\"" + name + "\" is not drawn");
+    const ImVec4 place = places_.at(name);
     const float scale = window_->scale(), pages = 46 * scale, strip = 100 * scale;
-    float top = pages, bottom = static_cast<float>(height_) - strip, x = (place->second.x + place->second.z) / 2;
+    float top = pages, bottom = static_cast<float>(height_) - strip, x = (place.x + place.z) / 2;
     if (!list.empty()) {
       const ImVec4 inside = places_.at(list);
       top = inside.y, bottom = inside.w, x = (inside.x + inside.z) / 2;
-    } else if (place->second.w <= top) {
-      return;  // the words of the pages
+    } else if (is_page(name)) {
+      return;  // always in sight
     }
-    if (place->second.y >= top && place->second.w <= bottom) return;
+    if (place.y >= top && place.w <= bottom) return;
     move_to(x, (top + bottom) / 2);
-    const unsigned wheel = place->second.y < top ? wheel_up : wheel_down;
+    const unsigned wheel = place.y < top ? wheel_up : wheel_down;
     button(wheel, true);
     button(wheel, false);
   }
-  throw std::runtime_error("\"" + name + "\" does not come into sight");
+  save(std::filesystem::temp_directory_path() / "out-of-sight.png");
+  throw std::runtime_error("\"" + name + "\" does not come into sight: out-of-sight.png has the window");
 }
 
 void Driver::press(const std::string& name, double share) {

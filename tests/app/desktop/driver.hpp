@@ -53,7 +53,8 @@ class Driver {
   /// Clicks into a field, whose whole text is then selected, and types.
   void put(const std::string& name, const std::string& text);
   void key(unsigned long keysym, bool with_ctrl = false);
-  [[nodiscard]] bool shows(const std::string& name) const { return places_.contains(name); }
+  /// Scrolls until the thing is in sight. Throws where it is not drawn.
+  void bring_into_sight(const std::string& name, const std::string& list = {});
 
   /// Pixels of the window that have exactly this colour.
   [[nodiscard]] int pixels_of(bathwright::charts::Colour colour) const;
@@ -65,7 +66,6 @@ class Driver {
 
  private:
   struct Screen;
-  void bring_into_sight(const std::string& name, const std::string& list = {});
   void press(const std::string& name, double share);
   void move_to(double x, double y);
   void button(unsigned which, bool down);
