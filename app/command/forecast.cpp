@@ -124,7 +124,7 @@ Json json_of(const sheets::ForecastPage& page) {
   doc["bleed_to_hold"] = Json::object();
   doc["largest_load"] = Json::object();
   for (const auto& bleed : page.bleeds) {
-    doc["bleed_to_hold"][bleed.limit] = bleed.litres_per_day;
+    doc["bleed_to_hold"][bleed.limit] = or_null(bleed.litres_per_day);
     doc["largest_load"][bleed.limit] = or_null(bleed.load);
   }
   doc["series"] = Json::array();
@@ -213,14 +213,18 @@ Result<std::vector<sheets::BleedToHold>> bleeds(const Forecast& forecast, const 
     if (limit.quantity.empty() || !limit.from_below || limit.share == 0 ||
         limit.cause != forecast::Cause::by_product)
       continue;
+    const std::string held = forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
+                             units::significant(limit.g_per_L) + " g/L";
     const auto bleed = forecast.bleed_to_hold(start, limit.quantity, limit.g_per_L);
-    if (!bleed) return bleed.problems();
+    if (!bleed && bleed.problems().front().kind != Fault::not_converged) return bleed.problems();
+    if (!bleed) {  // the rest of the forecast stands without it
+      all.push_back({held, std::nullopt, std::nullopt});
+      continue;
+    }
     if (!*bleed) continue;
     const auto load = forecast.largest_load(start, limit.quantity, limit.g_per_L);
-    if (!load) return load.problems();
-    all.push_back({forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
-                       units::significant(limit.g_per_L) + " g/L",
-                   **bleed, *load});
+    if (!load && load.problems().front().kind != Fault::not_converged) return load.problems();
+    all.push_back({held, **bleed, load ? *load : std::nullopt});
   }
   return all;
 }

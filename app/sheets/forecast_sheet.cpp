@@ -114,9 +114,14 @@ std::string turnover_of(const ForecastPage& page, const std::string& quantity) {
 
 void say_what_holds(Lines& lines, const ForecastPage& page) {
   for (const BleedToHold& bleed : page.bleeds) {
+    if (!bleed.litres_per_day) {
+      say(lines,
+          "  To hold " + bleed.limit + ": no bleed was found; something else holds or drives this level.", 2);
+      continue;
+    }
     say(lines,
-        "  To hold " + bleed.limit + ": bleed " + figure(bleed.litres_per_day, 3) + " L a day more, " +
-            figure(100 * bleed.litres_per_day / page.tank.working_volume.v, 2) + " % of the tank." +
+        "  To hold " + bleed.limit + ": bleed " + figure(*bleed.litres_per_day, 3) + " L a day more, " +
+            figure(100 * *bleed.litres_per_day / page.tank.working_volume.v, 2) + " % of the tank." +
             (!bleed.load ? ""
              : *bleed.load == 0
                  ? " As it is bled now it carries no work."

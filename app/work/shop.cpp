@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/bath/quantity_meant.hpp>
 #include <bathwright/described/bath_type_file.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
@@ -41,7 +42,7 @@ Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
       continue;
     }
     if (aim.quantity == "pH" || type.quantity(aim.quantity)) continue;
-    const auto close = nearest(aim.quantity, known);
+    const auto close = bath::quantity_meant(type, aim.quantity);
     problems.push_back({Fault::bad_input, tank.file + ": target: " + aim.quantity,
                         "is not a quantity of " + type.name, "one of " + joined(known),
                         close ? "Did you mean " + *close + "?" : ""});

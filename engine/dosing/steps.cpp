@@ -170,7 +170,7 @@ class Walk {
     Fill trial(fill_kg);
     for (const Going& one : going) {
       needs_.push_back(dissolving_need(chemistry_, state_, one.stock(), *one.what.brings,
-                                       rule_for(type_, one.stock().id), one.place.role));
+                                       type_.addition_rule(one.stock()), one.place.role));
       Step whole;
       whole.kg = one.what.kg;
       takes_kg_.push_back(trial.dissolve(needs_.back(), whole, start_.volume_L));
@@ -191,7 +191,7 @@ class Walk {
     result_.additions.push_back(addition_of(*one.what.item, one.what.kg));
     const double kg = one.is_water() ? fill_share_ * one.what.kg : one.what.kg;
     if (kg <= 0) return Done{};
-    const AdditionRule* rule = rule_for(type_, one.stock().id);
+    const AdditionRule* rule = type_.addition_rule(one.stock());
     TankState whole = Chemistry::after(state_, *one.what.brings, kg);
     whole.water_kg += takes_kg_[index] * water_per_kg_;
     const auto after = chemistry_.speciate(whole);
@@ -208,7 +208,7 @@ class Walk {
 
   Outcome carry(const std::vector<Going>& going, std::size_t index, double kg, int portion, int portions) {
     const Going& one = going[index];
-    const AdditionRule* rule = rule_for(type_, one.stock().id);
+    const AdditionRule* rule = type_.addition_rule(one.stock());
     Step step;
     step.number = static_cast<int>(result_.steps.size()) + 1;
     step.chemical = one.stock().id;
@@ -255,7 +255,8 @@ class Walk {
     for (std::size_t i = 0; i < index; ++i)
       if (!going[index].is_water() && !going[i].is_water() &&
           goes_before(going[index].place, going[i].place)) {
-        const bool ordered = rule_for(type_, going[i].stock().id) && rule_for(type_, going[index].stock().id);
+        const bool ordered =
+            type_.addition_rule(going[i].stock()) && type_.addition_rule(going[index].stock());
         step.checks.push_back({"order", false, ordered,
                                going[index].stock().name + " goes in before " + going[i].stock().name + ": " +
                                    going[index].place.why});

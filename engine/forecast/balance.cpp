@@ -250,8 +250,11 @@ class Compiler {
   void compile_feed(const Replenishment& rule) {
     const bath::ShelfItem* item = tank_.on_shelf(rule.stock);
     if (!item) {
-      problems_.push_back(
-          unknown("'" + rule.stock + "' is not on the shelf of " + tank_.name, "a shelf item"));
+      std::string shelf;
+      for (const bath::ShelfItem& one : tank_.shelf)
+        shelf += (shelf.empty() ? "one of " : ", ") + one.stock.id;
+      problems_.push_back(unknown("'" + rule.stock + "' is not on the shelf of " + tank_.name,
+                                  shelf.empty() ? "a shelf in the tank file" : shelf));
       return;
     }
     const auto lock = bath::interlock(chemistry_.type(), held_at_aims(), item->stock);

@@ -86,6 +86,7 @@ void Block::live(int day) {
             shifts_worked_ % feed.rule->every_shifts == 0)
           due.push_back(&feed);
       additions(due);
+      each([](Path& path) { return path.fill_up(); });
     }
   }
   each([&](Path& path) -> Outcome {

@@ -1,6 +1,7 @@
 #include <algorithm>
 #include <array>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/bath/quantity_meant.hpp>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/shopfiles/policy_file.hpp>
 #include <bathwright/units/read.hpp>
@@ -333,9 +334,7 @@ class Reader {
   const bath::Quantity* quantity_of(Table& table, const std::string& id) {
     const bath::Quantity* quantity = type_.quantity(id);
     if (quantity) return quantity;
-    std::vector<std::string> known;
-    for (const auto& q : type_.quantities) known.push_back(q.id);
-    const auto meant = nearest(id, known);
+    const auto meant = bath::quantity_meant(type_, id);
     table.report(id, "is no quantity of " + type_.name, "", meant ? "Did you mean " + *meant + '?' : "");
     return nullptr;
   }
@@ -424,9 +423,7 @@ class Reader {
     }
     const bath::Quantity* quantity = type_.quantity(r.quantity);
     if (!quantity) {
-      std::vector<std::string> known = {"pH"};
-      for (const auto& q : type_.quantities) known.push_back(q.id);
-      const auto meant = nearest(r.quantity, known);
+      const auto meant = bath::quantity_meant(type_, r.quantity);
       rule.report("to_aim", '"' + toml_schema::printable(r.quantity) + "\" is no quantity of " + type_.name,
                   "", meant ? "Did you mean " + *meant + '?' : "");
     }

@@ -8,9 +8,9 @@ namespace bathwright::sheets {
 
 /// What a limit needs to be held.
 struct BleedToHold {
-  std::string limit;          ///< "aluminium at 15.00 g/L"
-  double litres_per_day = 0;  ///< to bleed beyond the policy's own
-  /// Times the policy's work that its own bleed can carry; nothing: any.
+  std::string limit;                     ///< "aluminium at 15.00 g/L"
+  std::optional<double> litres_per_day;  ///< to bleed beyond the policy's own; nothing: none was found
+  /// Times the policy's work that its own bleed can carry; nothing: any, or none was found.
   std::optional<double> load;
 };
 

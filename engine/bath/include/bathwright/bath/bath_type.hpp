@@ -5,6 +5,7 @@
 
 #include <bathwright/activity/make_model.hpp>
 #include <bathwright/matter/formula.hpp>
+#include <bathwright/matter/stock.hpp>
 #include <bathwright/speciation/equilibria.hpp>
 #include <cstdint>
 #include <functional>
@@ -150,6 +151,9 @@ struct BathType {
   std::vector<Use> uses;
 
   [[nodiscard]] const Quantity* quantity(std::string_view id) const;  ///< nullptr if there is none
+  /// The rule of addition of a chemical, of a liquid that of another strength where it has none of its own;
+  /// nullptr where there is neither.
+  [[nodiscard]] const AdditionRule* addition_rule(const matter::StockChemical& stock) const;
   [[nodiscard]] bool acid_by_pH() const;  ///< H^+ follows from the pH, not from an analysis or the charges
 };
 
