@@ -46,6 +46,8 @@ struct Quantity {
   /// make up: NiCl2.6H2O = 1/2 Cl^-;  NiSO4.6H2O = Ni^2+ - 1/2 Cl^-.
   speciation::Composition counts;
   bool salt_view = false;  ///< another way to state components that are quantities of their own
+  /// A by-product of the work or a contaminant: its aim is what it may come to, and nobody adds it.
+  bool unwanted = false;
 };
 
 /// Limits in g/L (or pH units, degC, A/dm2). NaN: open.

@@ -89,9 +89,10 @@ struct AdditionSheet {
 struct Request {
   /// One standard uncertainty of the present level, g/L by quantity id; may be empty.
   std::map<std::string, double> uncertainty = {};
-  bool dead_band = true;              ///< false: to the aim, however near the tank is already
-  bool weighable = true;              ///< amounts as a shop's scales and jugs show them; false: unrounded
-  int most_plans = 4;                 ///< at least 1
+  bool dead_band = true;    ///< false: to the aim, however near the tank is already
+  bool bring_down = false;  ///< what is strong inside its window comes to its aim by taking bath out
+  bool weighable = true;    ///< amounts as a shop's scales and jugs show them; false: unrounded
+  int most_plans = 4;       ///< at least 1
   std::optional<Spread> spread = {};  ///< given: how sure each plan is to end inside every window
   Sampling sampling = {};             ///< of that
 };
