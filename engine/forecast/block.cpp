@@ -21,7 +21,7 @@ void Equilibria::each(const std::vector<Path*>& paths, const std::optional<speci
     variants_[i].component_mol = paths[i]->state().component_mol;
     for (double& mol : variants_[i].component_mol) mol *= task.water_kg / paths[i]->state().water_kg;
   }
-  const Outcome solved = session_.solve_variants(
+  const Outcome solved = session_.solve_variants_near_last(
       task, std::span(variants_).first(paths.size()),
       [&](std::size_t at, const Outcome& found, const speciation::Equilibrium& answer) {
         if (found)

@@ -24,6 +24,12 @@ struct Prepared {
   std::vector<std::string> species_names, solid_names;  ///< of the system, for `rate`
 };
 
+/// As Forecast::prepare. Its bleed and the amounts of its work may be changed afterwards: what is compiled
+/// does not hold them.
+[[nodiscard]] Result<std::shared_ptr<Prepared>> prepare(const bath::Tank& tank,
+                                                        const bath::Chemistry& chemistry,
+                                                        const Policy& policy);
+
 /// The first metal that has an aim: turnovers are counted in it. nullptr: none.
 [[nodiscard]] const Prepared::Metal* counted_metal(const Prepared& prepared);
 

@@ -25,8 +25,8 @@ const Prepared::Metal* counted_metal(const Prepared& p) {
   return at == p.metals.end() ? nullptr : &*at;
 }
 
-Result<Forecast> Forecast::prepare(const bath::Tank& tank, const bath::Chemistry& chemistry,
-                                   const Policy& policy) {
+Result<std::shared_ptr<Prepared>> prepare(const bath::Tank& tank, const bath::Chemistry& chemistry,
+                                          const Policy& policy) {
   auto prepared =
       std::make_shared<Prepared>(Prepared{tank, chemistry, policy, {}, Vessels::of(policy), {}, {}, {}, {}});
   if (prepared->vessels.count() > most_vessels)
@@ -65,8 +65,15 @@ Result<Forecast> Forecast::prepare(const bath::Tank& tank, const bath::Chemistry
                      "'" + rule.stock + "' goes by metal turnovers, and " + tank.name +
                          " plates no metal that its aims tell of",
                      "another rule", ""};
+  return prepared;
+}
+
+Result<Forecast> Forecast::prepare(const bath::Tank& tank, const bath::Chemistry& chemistry,
+                                   const Policy& policy) {
+  auto prepared = forecast::prepare(tank, chemistry, policy);
+  if (!prepared) return prepared.problems();
   Forecast forecast;
-  forecast.prepared_ = std::move(prepared);
+  forecast.prepared_ = *std::move(prepared);
   return forecast;
 }
 
