@@ -84,6 +84,14 @@ Driver::~Driver() {
   desk_.reset();
 }
 
+void Driver::draw(Intents& intents) {
+  desk_->update();
+  places_.clear();
+  draw_desk(desk_->view(), state_, {window_->fonts(), palette(window_->dark()), window_->scale(), &places_},
+            intents);
+  for (const Intent& intent : intents) desk_->handle(intent);
+}
+
 PictureCost Driver::picture() {
   PictureCost cost;
   glfwPollEvents();
@@ -91,15 +99,21 @@ PictureCost Driver::picture() {
   Intents intents;
   window_->picture([&] {
     const auto ui = Clock::now();
-    desk_->update();
-    places_.clear();
-    draw_desk(desk_->view(), state_, {window_->fonts(), palette(window_->dark()), window_->scale(), &places_},
-              intents);
-    for (const Intent& intent : intents) desk_->handle(intent);
+    draw(intents);
     cost.ui_ms = ms_since(ui);
   });
   cost.all_ms = ms_since(begin);
   return cost;
+}
+
+void Driver::sleep_as_the_window_does(double seconds) {
+  std::jthread bell([&, seconds] {
+    std::this_thread::sleep_for(std::chrono::duration<double>(seconds));
+    window_->close();
+    desktop::Window::wake();
+  });
+  Intents intents;
+  window_->run([&] { draw(intents); });
 }
 
 void Driver::pictures(int count) {

@@ -41,6 +41,8 @@ class Driver {
 
   PictureCost picture();
   void pictures(int count);
+  /// As the program does while nobody touches it: pictures only when something asks for one.
+  void sleep_as_the_window_does(double seconds);
   /// Pictures until it holds or the seconds are over; whether it held.
   bool until(const std::function<bool()>& holds, double seconds = 30);
 
@@ -69,6 +71,7 @@ class Driver {
   void press(const std::string& name, double share);
   void move_to(double x, double y);
   void button(unsigned which, bool down);
+  void draw(bathwright::desktop::Intents& intents);
 
   Display display_;
   std::unique_ptr<bathwright::desktop::Desk> desk_;
