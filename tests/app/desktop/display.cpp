@@ -2,6 +2,7 @@
 
 #include <fcntl.h>
 #include <signal.h>
+#include <sys/prctl.h>
 #include <sys/wait.h>
 #include <unistd.h>
 
@@ -18,7 +19,9 @@ Display::Display(int width, int height) {
   if (process_ == 0) {
     ::close(ends[0]);
     const int nowhere = ::open("/dev/null", O_WRONLY);
+    ::dup2(nowhere, STDOUT_FILENO);
     ::dup2(nowhere, STDERR_FILENO);
+    ::prctl(PR_SET_PDEATHSIG, SIGTERM);  // a test that ends by force takes its display along
     const std::string fd = std::to_string(ends[1]);
     ::execlp("Xvfb", "Xvfb", "-displayfd", fd.c_str(), "-screen", "0", size.c_str(), "-nolisten", "tcp",
              static_cast<char*>(nullptr));

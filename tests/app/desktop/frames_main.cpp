@@ -54,8 +54,9 @@ std::vector<PictureCost> pictures(Driver& driver, int count, const std::function
 }
 
 void fill_log(const std::filesystem::path& file, int entries) {
-  auto log = logbook::Logbook::open(file, logbook::OpenMode::create, work::wall_clock());
-  if (!log) throw std::runtime_error(text(log.problems()));
+  auto opened = logbook::Logbook::open(file, logbook::OpenMode::create, work::wall_clock());
+  if (!opened) throw std::runtime_error(text(opened.problems()));
+  logbook::Logbook log = *std::move(opened);
   std::vector<logbook::NewEntry> all;
   for (int i = 0; i < entries; ++i) {
     logbook::NewEntry entry;
@@ -64,7 +65,7 @@ void fill_log(const std::filesystem::path& file, int entries) {
     entry.body = R"({"note": "filter changed, basket )" + std::to_string(i) + R"( filled"})";
     all.push_back(std::move(entry));
   }
-  if (const auto logged = log->append_all(all); !logged) throw std::runtime_error(text(logged.problems()));
+  if (const auto logged = log.append_all(all); !logged) throw std::runtime_error(text(logged.problems()));
 }
 
 std::string at_size(int width, int height) {
