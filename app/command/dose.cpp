@@ -20,6 +20,8 @@ Json json_of(const bath::BathType& type, const dosing::Step& step) {
                       {"interlock", check.interlock},
                       {"detail", check.detail}});
   return {{"number", step.number},
+          {"takes_out", step.takes_out},
+          {"shift", step.shift},
           {"chemical", step.chemical},
           {"amount", step.amount},
           {"unit", step.unit},
@@ -78,6 +80,27 @@ Json json_of(const std::vector<dosing::Removal>& removals) {
   return list;
 }
 
+Json json_of(const std::vector<dosing::Rest>& rest) {
+  Json list = Json::array();
+  for (const auto& one : rest)
+    list.push_back({{"chemical", one.addition.chemical},
+                    {"amount", one.addition.amount},
+                    {"unit", one.addition.unit},
+                    {"evaporate_L", one.evaporate_L}});
+  return list;
+}
+
+Json json_of(const std::vector<dosing::Wait>& waits) {
+  Json list = Json::array();
+  for (const auto& one : waits)
+    list.push_back({{"quantity", one.quantity},
+                    {"use", one.use},
+                    {"units", one.units},
+                    {"unit", one.unit},
+                    {"takes", one.takes}});
+  return list;
+}
+
 Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
   Json additions = Json::array(), steps = Json::array();
   for (const auto& a : plan.additions)
@@ -110,6 +133,8 @@ Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
           {"left_alone", plan.left_alone},
           {"conflicts", plan.conflicts},
           {"keep_apart", plan.keep_apart},
+          {"rest", json_of(plan.rest)},
+          {"waits", json_of(plan.waits)},
           {"removals", json_of(plan.removals)}};
 }
 
@@ -141,6 +166,7 @@ Outcome write_html(const std::string& file, const sheets::Page& page) {
 
 struct Options {
   bool issue_slip = false;
+  bool take_out = false;
   std::string own_plan;  ///< file; empty: the planner's
   int samples = dosing::Sampling{}.samples;
   std::string html;
@@ -160,6 +186,7 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   for (const auto& level : analysis.reconciled)
     request.uncertainty[level.quantity] = level.standard_uncertainty.v;
   if (options.samples > 0) request.spread = dosing::Spread{.covariance = analysis.covariance};
+  request.bring_down = options.take_out;
   request.sampling = {.samples = options.samples,
                       .threads = std::max(1u, std::thread::hardware_concurrency())};
   const auto sheet = options.own_plan.empty()
@@ -208,6 +235,8 @@ void add_dose(CLI::App& program, Context& context, Action& action) {
       program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
   auto options = std::make_shared<Options>();
   verb->add_flag("--slip", options->issue_slip, "issues the best plan as a numbered slip of the log");
+  verb->add_flag("--take-out", options->take_out,
+                 "plans with bath taken out too, where something is strong inside its window");
   verb->add_option("--plan", options->own_plan,
                    "checks this list of additions in place of a plan of its own, TOML")
       ->check(CLI::ExistingFile);
