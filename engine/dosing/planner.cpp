@@ -6,6 +6,7 @@
 
 #include "conflicts.hpp"
 #include "steps.hpp"
+#include "waits.hpp"
 #include "weighing.hpp"
 
 namespace bathwright::dosing {
@@ -85,16 +86,30 @@ void count_misses(const Settling& settling, const Settled& end, Amounts& amounts
   }
 }
 
-/// How much higher the brim would have to be for what does not go in.
-Result<double> lacking_room(Settling settling, const Settled& end) {
-  Goal& volume = settling.goals().back();
+/// How much would have to evaporate for what does not go in, and what that is.
+Outcome lacking_room(const Situation& s, Settling settling, const Settled& end, Amounts& amounts) {
+  const Goal& volume = settling.goals().back();
   constexpr double rounding = 1e-4;
   const double full = volume.value + filled_freeboard * (volume.high - volume.value);
-  if (end.rows.back().deviation * volume.unit + volume.value < full - rounding * volume.unit) return 0.0;
-  volume.above = {{HUGE_VAL, weight::over_mark}};
-  const auto free = settling.settle(end.amount);
-  if (!free) return free.problems();
-  return free->rows.back().deviation * volume.unit + volume.value - volume.high;
+  if (end.rows.back().deviation * volume.unit + volume.value < full - rounding * volume.unit) return Done{};
+  // Evaporated is water that goes in with a minus. It counts next to nothing, so that the same chemicals are
+  // chosen as with room enough, not those of least volume.
+  Column dry{{std::vector<double>(s.now.component_mol.size(), 0), 1}, -1e-5 * weight::decant / s.target_L};
+  constexpr double most = 0.5;  // of the tank
+  dry.lower = -most * s.target_L;
+  dry.upper = 0;
+  std::vector<Column> columns = settling.columns();
+  columns.push_back(std::move(dry));
+  std::vector<Goal> goals = settling.goals();
+  goals.back().above = {{(full - volume.value) / volume.unit, 0}, {HUGE_VAL, weight::spilled}};
+  std::vector<double> amount = end.amount;
+  amount.push_back(0);
+  const auto dried = Settling(s.chemistry, s.now, std::move(goals), std::move(columns)).settle(amount);
+  if (!dried) return dried.problems();
+  amounts.lacks_room_L = -dried->amount.back();
+  for (std::size_t c = 0; c < s.supplies.size(); ++c)
+    amounts.rest_kg.push_back(std::max(0.0, dried->amount[c] - end.amount[c]));
+  return Done{};
 }
 
 /// The solids at their limits.
@@ -179,7 +194,7 @@ Result<Amounts> amounts_from(const Situation& s, const Wish& wish, std::vector<C
   if (!best) return best.problems();
   Amounts amounts;
   amounts.conflicts = conflicts(settling, *best, wish.may_decant);
-  if (const auto room = lacking_room(settling, *best); room) amounts.lacks_room_L = *room;
+  if (Outcome found = lacking_room(s, settling, *best, amounts); !found) amounts.lacks_room_L = 0;
   auto end = weighed(s, settling, *std::move(best));
   if (!end) return end.problems();
   count_misses(settling, *end, amounts);
@@ -262,6 +277,33 @@ std::vector<std::string> left_alone(const Situation& s) {
   return lines;
 }
 
+/// The first step; those after it count on.
+void take_out_first(Plan& plan, const bath::TankView& taken_out) {
+  for (Step& step : plan.steps) ++step.number;
+  Step first;
+  first.number = 1;
+  first.takes_out = true;
+  first.name = "bath";
+  first.unit = "L";
+  first.amount = plan.decant_L;
+  first.kg = plan.decant_L * taken_out.density_kg_per_L;
+  first.how = "To the waste treatment, before anything is added.";
+  first.why_here = "what is taken out afterwards takes the additions with it";
+  first.predicted = taken_out;
+  plan.steps.insert(plan.steps.begin(), std::move(first));
+}
+
+std::vector<Rest> rest_of(const Situation& s, const Amounts& amounts) {
+  std::vector<Rest> rest;
+  for (std::size_t c = 0; c < amounts.rest_kg.size(); ++c) {
+    const Supply& supply = s.supplies[c];
+    const double kg = weighable_kg(supply.item->stock, amounts.rest_kg[c]);
+    if (supply.is_water() || is_nothing(s, supply, kg)) continue;
+    rest.push_back({addition_of(*supply.item, kg), amounts.lacks_room_L});
+  }
+  return rest;
+}
+
 }  // namespace
 
 Result<Amounts> amounts_of_kind(const Situation& s, const Wish& wish) {
@@ -313,10 +355,14 @@ Result<Plan> plan_with(const Situation& s, const Wish& wish, const Amounts& amou
   const double decanted_share = amounts.decant_L / s.now_view.volume_L;
   for (double& mol : start.component_mol) mol *= 1 - decanted_share;
   start.water_kg *= 1 - decanted_share;
+  const auto taken_out = s.chemistry.quick_view(start);
+  if (!taken_out) return taken_out.problems();
   auto steps = make_steps(s.tank, s.chemistry, std::move(start), std::move(portioned));
   if (!steps) return steps.problems();
   plan.additions = std::move(steps->additions);
   plan.steps = std::move(steps->steps);
+  if (amounts.decant_L > 0) take_out_first(plan, *taken_out);
+  plan.rest = rest_of(s, amounts);
   plan.final_state = std::move(steps->final_state);
   plan.keep_apart = std::move(steps->keep_apart);
   auto end = s.chemistry.view(plan.final_state);
@@ -325,6 +371,7 @@ Result<Plan> plan_with(const Situation& s, const Wish& wish, const Amounts& amou
   Unmet unmet = unmet_aims(s, plan.final_view, amounts);
   plan.unmet = std::move(unmet.words);
   plan.left_alone = left_alone(s);
+  plan.waits = waits(s.tank, s.chemistry, plan.final_view);
   plan.feasible = unmet.inside && steps->refused.empty();
   for (const Refusal& refusal : steps->refused)
     plan.unmet.push_back(refusal.reason + " (" + refusal.rule + ")");

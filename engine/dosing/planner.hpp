@@ -58,6 +58,7 @@ struct Amounts {
   double penalty = 0;  ///< what missed aims and limits count, goals.hpp; volume and prices apart
   double missing = 0;  ///< the part of it that is not merely standing above an aim, inside the window
   std::vector<std::string> saturated;  ///< solids that may go no farther: "H3BO3 dissolved at 18.0 degC"
+  std::vector<double> rest_kg;         ///< per supply: what would go in beside if there were room
   double lacks_room_L = 0;             ///< that would have to evaporate first for all that should go in
   std::vector<std::string> conflicts;  ///< why windows cannot be met
 };

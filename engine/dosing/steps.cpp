@@ -39,17 +39,6 @@ struct Going {
   [[nodiscard]] bool is_water() const { return place.role == Role::water; }
 };
 
-Addition addition_of(const bath::ShelfItem& item, double kg) {
-  Addition addition;
-  addition.chemical = item.stock.id;
-  addition.name = item.stock.name;
-  addition.kg = kg;
-  addition.unit = item.stock.liquid ? "L" : "kg";
-  addition.amount = item.stock.liquid ? kg / item.stock.kg_per_L : kg;
-  addition.cost = item.price_per_kg() * kg;
-  return addition;
-}
-
 void add_to(std::vector<Addition>& additions, Addition more) {
   const auto same = std::ranges::find(additions, more.chemical, &Addition::chemical);
   if (same == additions.end()) {
@@ -157,6 +146,7 @@ class Walk {
     for (std::size_t i = 0; i < going.size(); ++i)
       if (Outcome added = add(going, i); !added) return added.problems();
     number_portions();
+    spread_over_shifts();
     if (!result_.steps.empty()) {
       Step& last = result_.steps.back();
       check_idle_end(chemistry_, limits_, last.checks, last.predicted);
@@ -196,6 +186,15 @@ class Walk {
     for (Step& step : result_.steps) {
       step.portion = ++so_far[step.chemical];
       step.portions = of[step.chemical];
+    }
+  }
+
+  void spread_over_shifts() {
+    constexpr double shift_h = 8;
+    double hours = 0;
+    for (Step& step : result_.steps) {
+      step.shift = static_cast<int>(hours / shift_h);
+      hours += step.wait_h;
     }
   }
 
@@ -343,6 +342,17 @@ class Walk {
 };
 
 }  // namespace
+
+Addition addition_of(const bath::ShelfItem& item, double kg) {
+  Addition addition;
+  addition.chemical = item.stock.id;
+  addition.name = item.stock.name;
+  addition.kg = kg;
+  addition.unit = item.stock.liquid ? "L" : "kg";
+  addition.amount = item.stock.liquid ? kg / item.stock.kg_per_L : kg;
+  addition.cost = item.price_per_kg() * kg;
+  return addition;
+}
 
 Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState state,
                          std::vector<Portioned> amounts, Sequence sequence) {

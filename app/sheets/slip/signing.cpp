@@ -1,4 +1,5 @@
 #include <algorithm>
+#include <bathwright/sheets/cautions.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <cmath>
 
@@ -50,7 +51,7 @@ Section signing(const AdditionSlip& slip) {
     lines.push_back({"nonconformance", ""});
   }
   section.blocks.push_back(std::move(lines));
-  section.blocks.push_back(Paragraph{"Computed with " + by.program + "."});
+  section.blocks.push_back(Paragraph{std::string(deferral) + " Computed with " + by.program + "."});
   return section;
 }
 

@@ -4,6 +4,7 @@
 #include <cmath>
 #include <random>
 
+#include "../../support/bath_type_named.hpp"
 #include "../../support/demo_tank.hpp"
 
 using namespace bathwright;
@@ -397,6 +398,21 @@ TEST_CASE("bath is taken out where adding alone cannot help", "[unit][dosing]") 
     const dosing::Plan& with_decant = plan_of(plans, "with decant");
     CHECK(with_decant.decant_L > 10);
     CHECK(with_decant.unmet.empty());
+    const dosing::Step& first = with_decant.steps.front();
+    CHECK(first.number == 1);
+    CHECK(first.takes_out);
+    CHECK(first.amount == with_decant.decant_L);
+    CHECK(first.predicted.volume_L == Approx(2400 - with_decant.decant_L).margin(0.1).epsilon(0));
+    CHECK(with_decant.steps[1].number == 2);
+    // Without it the rest waits for room: 45 g/L of the sulfate are missing.
+    const dosing::Plan& full = plan_of(plans, "least cost");
+    REQUIRE_FALSE(full.rest.empty());
+    double sulfate = kg_of(full, "nickel-sulfate");
+    for (const dosing::Rest& rest : full.rest) {
+      CHECK(rest.evaporate_L > 20);
+      if (rest.addition.chemical == "nickel-sulfate") sulfate += rest.addition.kg;
+    }
+    CHECK(sulfate == Approx(45 * 2.4 / 0.99).epsilon(0.03));  // ends between the mark and the brim
   }
   SECTION("for what stands strong inside its window only where that is asked for") {
     CHECK_FALSE(offers(planned(demo::state(295, 50, 42)).plans, "with decant"));
@@ -527,4 +543,30 @@ TEST_CASE("additions leave everything dissolved when the tank cools", "[unit][do
     CHECK(idle_room(planned(morning()).now) < 0);
     CHECK(planned(demo::state(280, 50, 28)).plans.front().unmet.empty());
   }
+}
+
+TEST_CASE("what the waits keep out of this shift is for the next", "[unit][dosing]") {
+  // 22 g/L of boric acid in rises of 5 g/L, two hours after each: the fifth begins after eight.
+  const dosing::Plan plan = planned(demo::state(280, 50, 20)).plans.front();
+  int first = 0, next = 0;
+  for (const dosing::Step& step : plan.steps)
+    if (step.chemical == "boric-acid") ++(step.shift == 0 ? first : next);
+  CHECK(first == 4);
+  CHECK(next == 1);
+}
+
+TEST_CASE("a strong metal that the work plates out is waited for", "[unit][dosing]") {
+  const bath::Tank tank =
+      must(shopfiles::read_tank(PROJECT_DIR "/baths/z-02.toml", matter::StockCatalogue::built_in()));
+  const bath::Chemistry zinc = must(
+      bath::Chemistry::prepare(bath_type_named(tank.bath_type), tank.temperature, tank.idle_temperature));
+  const bath::TankState strong = must(zinc.state_from({{"Zn^2+", 13.8}, {"NaOH", 125}, {"Na2CO3", 40}}, {},
+                                                      tank.working_volume, tank.temperature));
+  const dosing::Plan plan = must(dosing::plan_additions(tank, zinc, strong)).plans.front();
+  REQUIRE(plan.waits.size() == 1);
+  CHECK(plan.waits.front().quantity == "Zn^2+");
+  CHECK(plan.waits.front().takes);
+  CHECK(plan.waits.front().unit == "Ah");
+  // 1.8 g/L in 5000 L; 1.2196 g/Ah (65.38 x 3600 / 2 / 96485) at 72 % of the current, inert anodes.
+  CHECK(plan.waits.front().units == Approx(1.8 * 5000 / (1.2196 * 0.72)).epsilon(1e-3));
 }
