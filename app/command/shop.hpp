@@ -32,6 +32,9 @@ using RunOnReadings =
 /// TANK and READINGS, for verbs that work readings out, and the action that takes them.
 void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, RunOnReadings run);
 
+/// The same for a tank that was read already.
+Result<Shop> shop_of(const Context& context, bath::Tank tank);
+
 /// The state of a tank as the tank's own aims describe it, at the mark.
 Result<bath::TankState> state_at_aims(const Shop& shop);
 
