@@ -22,6 +22,12 @@ std::string counts(const std::vector<logbook::Entry>& entries) {
   return text + ".";
 }
 
+std::string approval(const hand_over::HandOver::OpenSlip& open) {
+  if (!open.approved_by.empty()) return "Approved by " + open.approved_by + ".";
+  return open.must_be_approved ? "NOT APPROVED: nothing is added against it before it is."
+                               : "Approved by nobody.";
+}
+
 }  // namespace
 
 Lines hand_over_sheet(const hand_over::HandOver& told, const shifts::Calendar& calendar,
@@ -33,12 +39,14 @@ Lines hand_over_sheet(const hand_over::HandOver& told, const shifts::Calendar& c
 
   heading(lines, "Open slips");
   if (told.open_slips.empty()) say(lines, "None.");
-  for (const auto& slip : told.open_slips)
+  for (const auto& open : told.open_slips) {
     say(lines,
-        "  Slip " + std::to_string(slip.seq) + ", tank " + slip.tank + ", of " +
-            local_time(slip.at, calendar) + " by " + slip.by +
+        "  Slip " + std::to_string(open.slip.seq) + ", tank " + open.slip.tank + ", of " +
+            local_time(open.slip.at, calendar) + " by " + open.slip.by +
             ": find out what of it is in the tank, then log it and close the slip.",
         4);
+    say(lines, "    " + approval(open));
+  }
 
   heading(lines, "Out of window");
   if (told.out_of_window.empty()) say(lines, "Nothing that was analysed in this shift.");

@@ -1,5 +1,6 @@
 // The scenarios through the program, and the report of them as it stands in the tree.
 #include <catch2/catch.hpp>
+#include <cmath>
 
 #include "../app/program.hpp"
 #include "scenario_table.hpp"
@@ -64,4 +65,25 @@ TEST_CASE("a slip of the pen is told with its line and its mend", "[failure][sce
              Catch::Contains("one of copper-oxide, sulfuric-acid"));
   changed("d4-policy.toml", "copper-oxide", "copper_oxide");  // its other id
   CHECK(bench.run("forecast " + files + "d4-tank.toml changed.toml --samples 0").status < 2);
+}
+
+TEST_CASE("the titrations of a morning have an end point, or say why not", "[unit][scenarios]") {
+  const app_test::Bench bench;
+  const auto of = [&](const std::string& tank) {
+    return bench
+        .run("analyse " PROJECT_DIR "/baths/" + tank + ".toml " PROJECT_DIR "/baths/readings/" + tank +
+             "-morning.toml --json")
+        .json();
+  };
+  // Iron as Fe(CN)6^4-, of which this bath has none, once kept the flask from being solved.
+  const auto copper = of("c-04");
+  const auto cyanide = scenario_table::at(copper, "end_points/quantity=free NaCN/bias_percent");
+  REQUIRE(cyanide.is_number());
+  CHECK(cyanide > 0);  // silver takes some of the cyanide that copper holds
+  CHECK(cyanide < 10);
+  CHECK_FALSE(scenario_table::at(copper, "end_points_unknown/quantity=Cu^+/why").is_null());
+  // Free caustic is what the acid finds at the sulfo-orange change, to a few per cent.
+  const auto caustic = scenario_table::at(of("z-02"), "end_points/quantity=NaOH/bias_percent");
+  REQUIRE(caustic.is_number());
+  CHECK(std::abs(caustic.get<double>()) < 5);
 }

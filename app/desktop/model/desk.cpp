@@ -16,6 +16,7 @@
 #include "work/hand_over_document.hpp"
 #include "work/slip.hpp"
 #include "work/user_folders.hpp"
+#include "work/what_must_not_meet.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -371,6 +372,15 @@ void Desk::log_entry(Result<logbook::NewEntry> entry, const Names& names) {
   }
   fault_.clear();
   signing_.start([session = signed_by(session_, names), entry = *std::move(entry)]() -> Result<std::string> {
+    if (entry.kind == logbook::EntryKind::addition) {
+      const auto met = work::met_in_tank(session, entry.tank, work::Json::parse(entry.body, nullptr, false));
+      if (!met) return met.problems();
+      if (!met->stops.empty())
+        return Problem{
+            Fault::refused, met->stops.front().chemical, met->stops.front().why, "",
+            "Add nothing of it. What has gone in already is logged as an event: bathwright log add "
+            "addition --event."};
+    }
     const auto logged = work::append_to_log(session, entry);
     if (!logged) return logged.problems();
     return work::words(*logged);

@@ -454,9 +454,10 @@ ShiftView shift_view(const LogNow& log, shifts::UtcTime now) {
     view.entries.push_back(row_of(*entry, log.calendar));
     if (const auto time = logbook::utc_from_iso(entry->at)) view.entries.back().place = share(*time);
   }
-  for (const logbook::Entry& slip : log.told->open_slips)
+  for (const auto& [slip, approved_by, must_be_approved] : log.told->open_slips)
     view.open.push_back("slip " + std::to_string(slip.seq) + " of " +
-                        slip.tank.substr(0, slip.tank.find(' ')));
+                        slip.tank.substr(0, slip.tank.find(' ')) +
+                        (must_be_approved && approved_by.empty() ? ", waits for approval" : ""));
   for (const shifts::Due& due : log.told->due)
     view.due.push_back(due.tank.substr(0, due.tank.find(' ')) + " " +
                        pretty(due.what.substr(due.what.rfind(' ') + 1)) + (due.overdue ? " (overdue)" : ""));
