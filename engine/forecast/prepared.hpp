@@ -21,6 +21,11 @@ struct Prepared {
     double at_aim_mol;  ///< 0: no aim
   };
   std::vector<Metal> metals;
+  /// What the levels at the start are drawn of: positions of the quantities that are no salt views, and what
+  /// a change of each of them by a mol is in component mol (least squares; columns are quantities).
+  std::vector<std::size_t> levels;
+  Eigen::MatrixXd mol_per_level_mol;
+  double most_ionic_strength = 0;                       ///< mol/kg; beyond it nothing is judged
   std::vector<std::string> species_names, solid_names;  ///< of the system, for `rate`
 };
 

@@ -70,9 +70,7 @@ class Endless {
     return Endless(*std::move(prepared), start);
   }
 
-  void bleed_more(double L_per_day) {
-    p_->policy.bleed_L_per_day = stated_.bleed_L_per_day + L_per_day;
-  }
+  void bleed_more(double L_per_day) { p_->policy.bleed_L_per_day = stated_.bleed_L_per_day + L_per_day; }
   void load(double times) {
     for (std::size_t w = 0; w < stated_.work.size(); ++w)
       p_->policy.work[w].per_shift.value = times * stated_.work[w].per_shift.value;

@@ -29,10 +29,16 @@ class Reader {
     read_film();
     read_evaporation();
     read_water();
-    if (auto bleed = root_.table({"bleed", optional, R"({ rate = "20 L/d" })"}))
+    if (auto bleed = root_.table({"bleed", optional, R"({ rate = "20 L/d" })"})) {
       policy_.bleed_L_per_day =
           24 * litres_per(*bleed, {"rate", required, R"("20 L/d")"}, units::read_duration).value_or(0);
+      policy_.bleed_at_work = bleed->truth({"at_work", optional, "true"});
+    }
     for (Table& rule : root_.tables({"replenish", optional, ""})) read_replenishment(rule);
+    for (Table& pair : root_.tables({"correlated", optional, ""}))
+      policy_.correlations.push_back({pair.text({"one", required, R"("drag-out")"}),
+                                      pair.text({"other", required, R"("work, deposition")"}),
+                                      pair.number({"correlation", required, "-0.93"}, {-1, 1}).value_or(0)});
     for (Table& decant : root_.tables({"decant", optional, ""})) read_decant(decant);
     for (Table& freeze : root_.tables({"freeze_out", optional, ""})) read_freeze_out(freeze);
     read_carbon_dioxide();

@@ -513,8 +513,8 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   double most_bleed = 0;
   for (const auto& bleed : told.bleeds) {
     view.figures.emplace_back("bleed that holds " + bleed.limit,
-                              figure(bleed.litres_per_day, 3) + " L more a day");
-    most_bleed = std::max(most_bleed, levers.bleed_L_per_day + bleed.litres_per_day);
+                              figure(*bleed.litres_per_day, 3) + " L more a day");
+    most_bleed = std::max(most_bleed, levers.bleed_L_per_day + *bleed.litres_per_day);
   }
   constexpr double usual_bleed = 200;
   view.levers[0].high = std::max({usual_bleed, 2 * levers.bleed_L_per_day, 1.5 * most_bleed});
