@@ -99,6 +99,14 @@ std::string effects_of(const bath::Use& use, const forecast::Policy& policy, dou
   return text.empty() ? "" : text + " }";
 }
 
+/// Whether the policy doubts the load to come more than the log leaves a doubt about the load that was: then
+/// its own figure stays, and what the log ties to the meter says nothing of it.
+bool load_doubted(const learning::Parameter& p, const forecast::Policy& policy) {
+  return std::ranges::any_of(policy.work, [&](const forecast::Work& work) {
+    return work.use == p.use && work.per_shift.u_rel > p.u_ln;
+  });
+}
+
 /// What the policy has keys for, as learned; the labels of the others go into `without_key`.
 std::vector<PolicyFigure> figures_of(const learning::Learned& learned, const forecast::Policy& policy,
                                      const bath::BathType& type, const std::string& text,
@@ -137,7 +145,7 @@ std::vector<PolicyFigure> figures_of(const learning::Learned& learned, const for
           break;
         }
         figures.push_back({"work", p.use, quoted(p.value, p.unit.substr(0, p.unit.find(' '))), "per_shift"});
-        figures.push_back({"work", p.use, doubt, "uncertainty"});
+        if (!load_doubted(p, policy)) figures.push_back({"work", p.use, doubt, "uncertainty"});
         break;
       case learning::What::efficiency:
         figures.push_back({"work", p.use,
@@ -161,7 +169,7 @@ std::vector<PolicyFigure> figures_of(const learning::Learned& learned, const for
 }
 
 /// The name a forecast gives what is uncertain in a parameter; empty where it draws nothing of it.
-std::string input_of(const learning::Parameter& p) {
+std::string input_of(const learning::Parameter& p, const forecast::Policy& policy) {
   switch (p.what) {
     case learning::What::drag_out:
       return "drag-out";
@@ -172,7 +180,7 @@ std::string input_of(const learning::Parameter& p) {
     case learning::What::water:
       return "water";
     case learning::What::work:
-      return "work, " + p.use;
+      return load_doubted(p, policy) ? "" : "work, " + p.use;
     case learning::What::efficiency:
       return "cathode efficiency of " + p.use;
     case learning::What::effects:
@@ -184,7 +192,8 @@ std::string input_of(const learning::Parameter& p) {
 }
 
 /// What was learned of two figures together, for those that a forecast with this policy draws.
-std::string correlated(const learning::Learned& learned, const std::vector<std::string>& drawn) {
+std::string correlated(const learning::Learned& learned, const forecast::Policy& policy,
+                       const std::vector<std::string>& drawn) {
   constexpr double least = 0.05, kept = 0.999;  // short of 1, so that rounding contradicts nothing
   std::string text;
   const std::size_t n = learned.parameters.size();
@@ -193,10 +202,11 @@ std::string correlated(const learning::Learned& learned, const std::vector<std::
       const learning::Parameter &one = learned.parameters[i], &other = learned.parameters[j];
       const double correlation = learned.covariance[i * n + j] /
                                  std::sqrt(learned.covariance[i * n + i] * learned.covariance[j * n + j]);
-      if (!(std::abs(correlation) >= least) || std::ranges::count(drawn, input_of(one)) == 0 ||
-          std::ranges::count(drawn, input_of(other)) == 0)
+      const std::string first = input_of(one, policy), second = input_of(other, policy);
+      if (!(std::abs(correlation) >= least) || std::ranges::count(drawn, first) == 0 ||
+          std::ranges::count(drawn, second) == 0)
         continue;
-      text += "\n[[correlated]]\none = \"" + input_of(one) + "\"\nother = \"" + input_of(other) +
+      text += "\n[[correlated]]\none = \"" + first + "\"\nother = \"" + second +
               "\"\ncorrelation = " + units::significant(kept * correlation, 4) + "\n";
     }
   return text;
@@ -218,7 +228,7 @@ Result<std::vector<std::string>> write_policy(const std::string& path, const std
   if (!alone) return alone.problems();
   const auto forecast = forecast::Forecast::prepare(shop.tank, shop.chemistry, *alone);
   if (!forecast) return forecast.problems();
-  written += correlated(learned, forecast->uncertain());
+  written += correlated(learned, policy, forecast->uncertain());
   const auto again = shopfiles::read_policy_text(path, written, shop.type());
   if (!again) return again.problems();
   if (const auto ready = forecast::Forecast::prepare(shop.tank, shop.chemistry, *again); !ready)
