@@ -6,6 +6,14 @@
 #include "slip/parts.hpp"
 
 namespace bathwright::sheets {
+namespace {
+
+Section read_as(Reading reading, Section section) {
+  section.reading = reading;
+  return section;
+}
+
+}  // namespace
 
 Page addition_page(const AdditionSlip& slip) {
   const bath::Tank& tank = slip.tank;
@@ -17,6 +25,7 @@ Page addition_page(const AdditionSlip& slip) {
   page.add(slip::origin(slip));
   page.add(slip::stopping(slip));
   page.add(slip::levels(slip));
+  page.add(read_as(Reading::small_print, slip::notes(slip)));
   if (!slip.sheet.plans.empty()) {
     const dosing::Plan& plan = slip.sheet.plans.front();
     if (plan.decant_L > 0) {
@@ -32,17 +41,17 @@ Page addition_page(const AdditionSlip& slip) {
     } else {
       page.add(slip::weighing(slip, plan));
       page.add(slip::order(slip, plan));
-      page.add(slip::expected_after_each(slip, plan));
-      page.add(slip::watch(plan));
+      page.add(read_as(Reading::background, slip::expected_after_each(slip, plan)));
+      page.add(read_as(Reading::small_print, slip::watch(plan)));
     }
-    page.add(slip::promise(slip, plan));
-    page.add(slip::not_at_its_aim(plan));
-    page.add(slip::bringing_down(plan));
+    page.add(read_as(Reading::small_print, slip::promise(slip, plan)));
+    page.add(read_as(Reading::small_print, slip::not_at_its_aim(plan)));
+    page.add(read_as(Reading::small_print, slip::bringing_down(plan)));
   }
-  page.add(slip::other_plans(slip));
-  page.add(slip::refused(slip));
-  page.add(cautions(slip.sheet.cautions));
-  page.add(doubts(slip.sheet.now.warnings));
+  page.add(read_as(Reading::background, slip::other_plans(slip)));
+  page.add(read_as(Reading::small_print, slip::refused(slip)));
+  page.add(read_as(Reading::small_print, cautions(slip.sheet.cautions)));
+  page.add(read_as(Reading::background, doubts(slip.sheet.now.warnings)));
   page.add(slip::signing(slip));
   return page;
 }

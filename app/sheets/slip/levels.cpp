@@ -96,7 +96,12 @@ Section levels(const AdditionSlip& slip) {
     section.blocks.push_back(Paragraph{"At " + units::show(slip.tank.temperature, "degC", 3) +
                                        ", for which the steps are worked out, the pH is " +
                                        fixed(slip.sheet.now.pH, 2) + "."});
-  for (const std::string& note : slip.analysis.notes) section.blocks.push_back(Paragraph{"Note: " + note});
+  return section;
+}
+
+Section notes(const AdditionSlip& slip) {
+  Section section{"Notes on the analysis", {}};
+  for (const std::string& note : slip.analysis.notes) section.blocks.push_back(Paragraph{note});
   return section;
 }
 

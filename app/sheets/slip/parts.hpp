@@ -11,6 +11,8 @@ namespace bathwright::sheets::slip {
 [[nodiscard]] Section stopping(const AdditionSlip& slip);
 /// Each aim: its limits, what was found, what is expected at the end; earlier results below.
 [[nodiscard]] Section levels(const AdditionSlip& slip);
+/// What the analysis assumed or found odd without changing a figure.
+[[nodiscard]] Section notes(const AdditionSlip& slip);
 /// What to weigh out of which lot.
 [[nodiscard]] Section weighing(const AdditionSlip& slip, const dosing::Plan& plan);
 /// The steps in order, and what the tank shows after each.

@@ -40,6 +40,7 @@ Section signing(const AdditionSlip& slip) {
   std::string prepared = by.prepared_by;
   if (!by.issued.empty()) prepared += ", " + by.issued;
   if (!by.shift.empty()) prepared += ", shift " + by.shift;
+  prepared += ", with " + by.program;
   SignatureLines lines{{"prepared", prepared}, {"approved", by.approved_by}};
   if (doses) {
     lines.push_back({"carried out", ""});
@@ -50,7 +51,6 @@ Section signing(const AdditionSlip& slip) {
     lines.push_back({"nonconformance", ""});
   }
   section.blocks.push_back(std::move(lines));
-  section.blocks.push_back(Paragraph{"Computed with " + by.program + "."});
   return section;
 }
 
