@@ -29,7 +29,7 @@ void tell(const QuantityTrend& trend, const std::optional<ControlChart>& chart, 
           std::vector<std::string>& sentences) {
   if (!chart) return;
   for (const trends::Finding& finding : chart->findings)
-    sentences.push_back(of + ": " + finding.what + ", " + where(trend, *chart, finding) + ". " +
+    sentences.push_back(of + ": " + finding.what + ", " + where(trend, *chart, finding) + "; " +
                         finding.rule + ".");
 }
 
@@ -38,9 +38,9 @@ Table limits_of(const QuantityTrend& trend) {
                {"values", Align::number},
                {"mean", Align::number},
                {"sigma", Align::number},
-               {"low limit", Align::number},
-               {"high limit", Align::number},
-               {"largest step", Align::number}});
+               {"low", Align::number},
+               {"high", Align::number},
+               {"step at most", Align::number}});
   const auto row = [&](const char* head, const std::optional<ControlChart>& chart) {
     if (!chart) return;
     const trends::Individuals& limits = chart->limits;
@@ -66,8 +66,7 @@ Section section_of(const QuantityTrend& trend) {
     return section;
   }
   section.blocks.emplace_back(limits_of(trend));
-  for (const std::string& words : findings_in_words(trend))
-    section.blocks.emplace_back(Task{words, "", {}, {}});
+  for (const std::string& words : findings_in_words(trend)) say(words);
   if (findings_in_words(trend).empty()) say("No pattern: no rule is tripped.");
   if (trend.trend.capability)
     say("Of the window " + figure(trend.aim->low) + " to " + figure(trend.aim->high) + ": Cpk " +
@@ -143,7 +142,9 @@ charts::Chart chart_of(const QuantityTrend& trend, const ControlChart& control, 
   for (const trends::Finding& finding : control.findings) {
     const double day = trend.points[control.points[finding.points.back()]].day;
     const bool marked = std::ranges::any_of(chart.moments, [&](const auto& one) { return one.x == day; });
-    if (!marked) chart.moments.push_back({day, finding.rule});
+    if (!marked)
+      chart.moments.push_back(
+          {day, std::to_string(trend.points[control.points[finding.points.back()]].entry)});
   }
   return chart;
 }
@@ -165,7 +166,7 @@ charts::Page trends_charts(const Trends& trends) {
   }
   page.foot =
       "Dots: found. Lines: mean and limits (3 sigma from the mean moving range). Bracket: the window, its diamond the "
-      "aim. Upright: where a rule is tripped.";
+      "aim. Upright: a rule is tripped at that entry.";
   return page;
 }
 
