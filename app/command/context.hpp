@@ -48,5 +48,6 @@ void add_plugins(CLI::App& program, Context& context, Action& action);
 void add_solution(CLI::App& program, Context& context, Action& action);
 void add_sources(CLI::App& program, Context& context, Action& action);
 void add_tank(CLI::App& program, Context& context, Action& action);
+void add_trends(CLI::App& program, Context& context, Action& action);
 
 }  // namespace bathwright::command

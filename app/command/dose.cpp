@@ -2,8 +2,8 @@
 #include <CLI/CLI.hpp>
 #include <algorithm>
 #include <bathwright/sheets/analysis_sheet.hpp>
-#include <fstream>
 
+#include "printed.hpp"
 #include "shared_options.hpp"
 #include "work/dose_document.hpp"
 #include "work/own_plan.hpp"
@@ -13,22 +13,12 @@
 namespace bathwright::command {
 namespace {
 
-/// The page in HTML, where a file for it was named.
-Outcome write_html(const std::string& file, const sheets::Page& page) {
-  if (file.empty()) return Done{};
-  std::ofstream out(file, std::ios::binary);
-  out << sheets::html_of(page);
-  out.close();
-  if (out) return Done{};
-  return Problem{Fault::io, file, "the file cannot be written", "", "Check the folder and the disk."};
-}
-
 struct Options {
   bool issue_slip = false;
   bool take_out = false;
   std::string own_plan;  ///< file; empty: the planner's
   int samples = dosing::Sampling{}.samples;
-  std::string html;
+  PrintedFiles printed;
 };
 
 int run(const Context& context, const std::string& tank_path, const std::string& readings_path,
@@ -73,7 +63,8 @@ int run(const Context& context, const std::string& tank_path, const std::string&
     print(sheets::text_of(page));
     if (logged) print(lines_of(*logged));
   }
-  if (Outcome written = write_html(options.html, page); !written) return fail(context, written.problems());
+  if (Outcome written = write_printed(options.printed, page); !written)
+    return fail(context, written.problems());
   const bool nothing_to_do = !sheet->plans.empty() && sheet->plans.front().feasible &&
                              sheet->plans.front().additions.empty() && analysis.suspects.empty();
   return nothing_to_do && analysed->changed_since.empty() && stops.empty() &&
@@ -97,7 +88,7 @@ void add_dose(CLI::App& program, Context& context, Action& action) {
   verb->add_option("--samples", options->samples, "tanks drawn for the chance of ending inside; 0: none")
       ->check(CLI::Range(0, 1000000))
       ->capture_default_str();
-  verb->add_option("--html", options->html, "writes the sheet to this file too, to print it");
+  add_printed_files(*verb, options->printed);
   add_tank_and_readings(
       *verb, context, action,
       [options](const Context& given, const std::string& tank, const std::string& readings) {

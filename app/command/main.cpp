@@ -64,6 +64,7 @@ int main(int argc, char** argv) {
   add_forecast(program, context, action);
   add_learn(program, context, action);
   add_log(program, context, action);
+  add_trends(program, context, action);
   add_plant(program, context, action);
   add_solution(program, context, action);
   add_fit(program, context, action);

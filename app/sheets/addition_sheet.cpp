@@ -4,6 +4,14 @@
 #include "slip/parts.hpp"
 
 namespace bathwright::sheets {
+namespace {
+
+Section read_as(Reading reading, Section section) {
+  section.reading = reading;
+  return section;
+}
+
+}  // namespace
 
 Page addition_page(const AdditionSlip& slip) {
   const bath::Tank& tank = slip.tank;
@@ -23,16 +31,16 @@ Page addition_page(const AdditionSlip& slip) {
       page.add(std::move(nothing));
     } else {
       page.add(slip::order(slip, plan));
-      page.add(slip::expected_after_each(slip, plan));
-      page.add(slip::watch(plan));
+      page.add(read_as(Reading::background, slip::expected_after_each(slip, plan)));
+      page.add(read_as(Reading::small_print, slip::watch(plan)));
     }
-    page.add(slip::not_at_its_aim(plan));
-    page.add(slip::bringing_down(plan));
+    page.add(read_as(Reading::small_print, slip::not_at_its_aim(plan)));
+    page.add(read_as(Reading::small_print, slip::bringing_down(plan)));
   }
-  page.add(slip::other_plans(slip));
-  page.add(slip::refused(slip));
-  page.add(slip::warnings(slip));
-  page.add(slip::doubtful(slip));
+  page.add(read_as(Reading::background, slip::other_plans(slip)));
+  page.add(read_as(Reading::small_print, slip::refused(slip)));
+  page.add(read_as(Reading::small_print, slip::warnings(slip)));
+  page.add(read_as(Reading::background, slip::doubtful(slip)));
   page.add(slip::signing(slip));
   return page;
 }

@@ -2,7 +2,6 @@
 #include <bathwright/sheets/hand_over_sheet.hpp>
 #include <bathwright/sheets/log_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
-#include <bathwright/sheets/table.hpp>
 
 namespace bathwright::sheets {
 namespace {
@@ -30,26 +29,25 @@ std::string approval(const hand_over::HandOver::OpenSlip& open) {
 
 }  // namespace
 
-Lines hand_over_sheet(const hand_over::HandOver& told, const shifts::Calendar& calendar,
-                      const std::string& by) {
+Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& calendar,
+                    const std::string& by) {
   const auto local = [&](shifts::UtcTime time) { return calendar.zone().local_text(time); };
-  Lines lines;
-  title(lines, "Hand-over of shift " + told.shift.label,
-        local(told.shift.from) + " to " + local(told.shift.to));
+  Page page{
+      "Hand-over of shift " + told.shift.label, local(told.shift.from) + " to " + local(told.shift.to), {}};
 
-  heading(lines, "Open slips");
-  if (told.open_slips.empty()) say(lines, "None.");
-  for (const auto& open : told.open_slips) {
-    say(lines,
-        "  Slip " + std::to_string(open.slip.seq) + ", tank " + open.slip.tank + ", of " +
-            local_time(open.slip.at, calendar) + " by " + open.slip.by +
-            ": find out what of it is in the tank, then log it and close the slip.",
-        4);
-    say(lines, "    " + approval(open));
-  }
+  Section slips{"Open slips", {}};
+  if (told.open_slips.empty()) slips.blocks.emplace_back(Paragraph{"None."});
+  for (const auto& open : told.open_slips)
+    slips.blocks.emplace_back(
+        Task{"Slip " + std::to_string(open.slip.seq) + ", tank " + open.slip.tank,
+             "settled _____ by _______",
+             {},
+             {"of " + local_time(open.slip.at, calendar) + " by " + open.slip.by +
+                  ": find out what of it is in the tank, then log it and close the slip",
+              approval(open)}});
+  page.add(std::move(slips));
 
-  heading(lines, "Out of window");
-  if (told.out_of_window.empty()) say(lines, "Nothing that was analysed in this shift.");
+  Section outside{"Out of window", {}};
   Table out({{"tank"},
              {"of"},
              {"found", Align::number},
@@ -57,31 +55,39 @@ Lines hand_over_sheet(const hand_over::HandOver& told, const shifts::Calendar& c
              {"high", Align::number},
              {"entry", Align::number}});
   for (const auto& one : told.out_of_window)
-    out.add({one.tank, one.quantity, figure(one.found), figure(one.low), figure(one.high),
+    out.add({one.tank, pretty(one.quantity), figure(one.found), figure(one.low), figure(one.high),
              std::to_string(one.seq)});
-  if (!out.empty()) append(lines, out.lines());
+  if (out.empty())
+    outside.blocks.emplace_back(Paragraph{"Nothing that was analysed in this shift."});
+  else
+    outside.blocks.emplace_back(std::move(out));
+  page.add(std::move(outside));
 
-  heading(lines, "Due before the end of the next shift");
-  if (told.due.empty()) say(lines, "Nothing that has a schedule.");
+  Section next{"Due before the end of the next shift", {}};
   Table due({{"due"}, {"tank"}, {"what"}});
   for (const auto& one : told.due)
     due.add({one.last ? (one.overdue ? "overdue since " : "") + local(one.at) : "never done", one.tank,
              one.what});
-  if (!due.empty()) append(lines, due.lines());
+  if (due.empty())
+    next.blocks.emplace_back(Paragraph{"Nothing that has a schedule."});
+  else
+    next.blocks.emplace_back(std::move(due));
+  page.add(std::move(next));
 
-  heading(lines, "Logged");
-  say(lines, counts(told.entries));
-  if (!told.entries.empty()) append(lines, log_list(told.entries, {}, calendar));
+  Section logged{"Logged", {}};
+  logged.blocks.emplace_back(Paragraph{counts(told.entries) + " Times of " + calendar.zone().name() + "."});
+  if (!told.entries.empty()) logged.blocks.emplace_back(log_table(told.entries, {}, calendar));
+  page.add(std::move(logged));
 
-  lines.emplace_back();
+  Section end;
   if (told.head) {
-    say(lines,
-        "Entry " + std::to_string(told.head->seq) + " is the last. Its hash, to compare the log with later:");
-    say(lines, "  " + told.head->hash);
+    end.blocks.emplace_back(Paragraph{"Entry " + std::to_string(told.head->seq) +
+                                      " is the last. Its hash, to compare the log with later:"});
+    end.blocks.emplace_back(Paragraph{told.head->hash});
   }
-  lines.emplace_back();
-  lines.push_back("Handed over by " + by + "          taken over by ____________________");
-  return lines;
+  end.blocks.emplace_back(SignatureLines{{"handed over by", by}, {"taken over by", ""}});
+  page.add(std::move(end));
+  return page;
 }
 
 }  // namespace bathwright::sheets

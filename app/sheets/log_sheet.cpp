@@ -1,6 +1,5 @@
 #include <algorithm>
 #include <bathwright/sheets/log_sheet.hpp>
-#include <bathwright/sheets/table.hpp>
 #include <sstream>
 
 namespace bathwright::sheets {
@@ -23,6 +22,20 @@ std::string local_time(const std::string& iso, const std::optional<shifts::Calen
   return text;
 }
 
+Table log_table(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by,
+                const std::optional<shifts::Calendar>& calendar) {
+  Table table({{"no.", Align::number}, {calendar ? "logged" : "logged (UTC)"}, {"kind"}, {"by"}, {"tank"}});
+  for (const logbook::Entry& entry : entries) {
+    std::string kind(logbook::name(entry.kind));
+    if (entry.about) kind += " of " + std::to_string(*entry.about);
+    if (const auto found = corrected_by.find(entry.seq); found != corrected_by.end())
+      kind += ", corrected by " + numbers(found->second);
+    table.add({std::to_string(entry.seq), local_time(entry.at, calendar), kind,
+               entry.witness.empty() ? entry.by : entry.by + ", " + entry.witness, entry.tank});
+  }
+  return table;
+}
+
 Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by,
                const std::optional<shifts::Calendar>& calendar) {
   Lines lines;
@@ -30,16 +43,6 @@ Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& co
     say(lines, "No entry fits.");
     return lines;
   }
-  const std::string clock = calendar ? "logged" : "logged (UTC)";
-  const auto row = [&](const logbook::Entry& entry) {
-    std::string kind(logbook::name(entry.kind));
-    if (entry.about) kind += " of " + std::to_string(*entry.about);
-    if (const auto found = corrected_by.find(entry.seq); found != corrected_by.end())
-      kind += ", corrected by " + numbers(found->second);
-    const std::string by = entry.witness.empty() ? entry.by : entry.by + ", " + entry.witness;
-    return std::vector<std::string>{std::to_string(entry.seq), local_time(entry.at, calendar), kind, by,
-                                    entry.tank};
-  };
   // Entries without a shift, as of people and settings, stand where they were logged.
   for (auto first = entries.begin(); first != entries.end();) {
     const auto named = std::find_if(first, entries.end(), [](const auto& one) { return !one.shift.empty(); });
@@ -47,9 +50,8 @@ Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& co
     const auto end = std::find_if(first, entries.end(),
                                   [&](const auto& one) { return !one.shift.empty() && one.shift != shift; });
     if (!shift.empty()) heading(lines, "Shift " + shift);
-    Table table({{"no.", Align::number}, {clock}, {"kind"}, {"by"}, {"tank"}});
-    for (; first != end; ++first) table.add(row(*first));
-    append(lines, table.lines());
+    append(lines, log_table({first, end}, corrected_by, calendar).lines());
+    first = end;
   }
   if (calendar) say(lines, "Times of " + calendar->zone().name() + ".");
   return lines;

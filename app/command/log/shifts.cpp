@@ -6,6 +6,7 @@
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 
+#include "printed.hpp"
 #include "shared_options.hpp"
 #include "verbs.hpp"
 #include "work/hand_over_document.hpp"
@@ -104,10 +105,16 @@ Result<shifts::ShiftSpan> shift_to_hand_over(const shifts::Calendar& calendar, c
                  "a label as in the list", close ? "Did you mean \"" + *close + "\"?" : ""};
 }
 
-int hand_over_verb(const Context& context, const std::vector<std::string>& tank_files,
-                   const std::string& label, bool log_it) {
+struct HandOverOptions {
+  std::vector<std::string> tank_files;
+  std::string label;  ///< of the shift; empty: the latest
+  bool log_it = false;
+  PrintedFiles printed;
+};
+
+int hand_over_verb(const Context& context, const HandOverOptions& options) {
   std::vector<bath::Tank> tanks;
-  for (const std::string& file : tank_files) {
+  for (const std::string& file : options.tank_files) {
     auto tank = shopfiles::read_tank(file, matter::StockCatalogue::built_in());
     if (!tank) return fail(context, tank.problems());
     tanks.push_back(*std::move(tank));
@@ -121,13 +128,14 @@ int hand_over_verb(const Context& context, const std::vector<std::string>& tank_
                 {{Fault::bad_input, log_path(context).string(), "has no shifts", "shifts to hand over",
                   "Set them: bathwright log shifts 3x8 --zone Europe/Berlin"}});
   const auto now = wall_clock().utc_now();
-  const auto shift = shift_to_hand_over(**calendar, label, now);
+  const auto shift = shift_to_hand_over(**calendar, options.label, now);
   if (!shift) return fail(context, shift.problems());
   const auto told = hand_over::hand_over(*log, **calendar, *shift, tanks, now);
   if (!told) return fail(context, told.problems());
   Json doc = hand_over_document(*told);
-  sheets::Lines lines = sheets::hand_over_sheet(*told, **calendar, signer(context));
-  if (log_it) {
+  const sheets::Page page = sheets::hand_over_page(*told, **calendar, signer(context));
+  sheets::Lines lines = sheets::text_of(page);
+  if (options.log_it) {
     logbook::NewEntry entry;
     entry.kind = logbook::EntryKind::hand_over;
     entry.body = text_of(doc);
@@ -140,6 +148,8 @@ int hand_over_verb(const Context& context, const std::vector<std::string>& tank_
     print(doc);
   else
     print(lines);
+  if (Outcome written = write_printed(options.printed, page); !written)
+    return fail(context, written.problems());
   const bool quiet = told->open_slips.empty() && told->out_of_window.empty() && told->due.empty();
   return quiet ? Exit::all_well : Exit::finding;
 }
@@ -163,16 +173,16 @@ void add_shifts(CLI::App& log, Context& context, Action& action) {
       "  bathwright log shifts --zone America/Chicago --shift-at day=06:00-18:00@Mon,Tue,Wed,Thu\n");
 
   auto* hand_over = log.add_subcommand("hand-over", "the sheet one shift gives the next")->fallthrough();
-  auto tanks = std::make_shared<std::vector<std::string>>();
-  auto label = std::make_shared<std::string>();
-  auto log_it = std::make_shared<bool>(false);
-  hand_over->add_option("TANK", *tanks, "tanks whose windows and schedules are looked at, TOML")
+  auto to_hand_over = std::make_shared<HandOverOptions>();
+  hand_over
+      ->add_option("TANK", to_hand_over->tank_files, "tanks whose windows and schedules are looked at, TOML")
       ->check(CLI::ExistingFile);
-  hand_over->add_option("--of", *label, "the shift, as \"2026-03-02 night\"; else the latest");
-  hand_over->add_flag("--sign", *log_it, "logs that it was handed over");
+  hand_over->add_option("--of", to_hand_over->label, "the shift, as \"2026-03-02 night\"; else the latest");
+  hand_over->add_flag("--sign", to_hand_over->log_it, "logs that it was handed over");
+  add_printed_files(*hand_over, to_hand_over->printed);
   add_signature(*hand_over, context);
-  hand_over->callback([&context, &action, tanks, label, log_it] {
-    action = [&context, tanks, label, log_it] { return hand_over_verb(context, *tanks, *label, *log_it); };
+  hand_over->callback([&context, &action, to_hand_over] {
+    action = [&context, to_hand_over] { return hand_over_verb(context, *to_hand_over); };
   });
   hand_over->footer(
       "Example: bathwright log hand-over baths/n-07.toml baths/e-02.toml --sign --by \"M. Okafor\"\n");

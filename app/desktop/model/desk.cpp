@@ -9,7 +9,6 @@
 #include <ctime>
 
 #include "views.hpp"
-#include "whole_file.hpp"
 #include "work/constants.hpp"
 #include "work/demonstration.hpp"
 #include "work/dose_document.hpp"
@@ -17,6 +16,7 @@
 #include "work/slip.hpp"
 #include "work/user_folders.hpp"
 #include "work/what_must_not_meet.hpp"
+#include "work/whole_file.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -64,7 +64,10 @@ Desk::Desk(work::Session session, const std::filesystem::path& shop, std::functi
                wake_),
       forecast_job_([this](const ForecastQuestion& question, const std::stop_token& stop,
                            const auto& give) { forecast_work_.answer(question, stop, give); },
-                    wake_) {
+                    wake_),
+      trends_job_([](const TrendsQuestion& question, const std::stop_token&,
+                     const auto& give) { give(read_trends(question)); },
+                  wake_) {
   const std::filesystem::path& folder = shop.empty() ? settings_.shop : shop;
   if (!folder.empty()) open_shop(folder, !shop.empty());
   show();
@@ -75,7 +78,8 @@ const bath::Tank* Desk::tank() const {
 }
 
 bool Desk::working() const {
-  return tank_job_.working() || log_job_.working() || forecast_job_.working() || signing_.busy();
+  return tank_job_.working() || log_job_.working() || forecast_job_.working() || trends_job_.working() ||
+         signing_.busy();
 }
 
 HeadUnits Desk::head_units() const {
@@ -123,6 +127,7 @@ void Desk::open_tank(int tank) {
   ask();
   ask_log();
   if (view_.page == PageName::forecast) ask_forecast();
+  if (view_.page == PageName::trends) ask_trends();
 }
 
 void Desk::handle(const Intent& intent) {
@@ -133,6 +138,7 @@ void Desk::handle(const Intent& intent) {
                    fault_.clear();
                    said_.clear();
                    if (to.page == PageName::forecast && !forecasted_) ask_forecast();
+                   if (to.page == PageName::trends) ask_trends();
                    if (to.page == PageName::bath_types) list_bath_types();
                  },
                  [&](const OpenTank& open) {
@@ -281,7 +287,8 @@ void Desk::ask() {
   Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, edited_, plan_, log_.last};
   if (draft_ && !nothing_typed(draft_->now())) {
     const std::filesystem::path file = draft_file().replace_extension(".toml");
-    if (const Outcome written = write_whole(file, readings_text(draft_->now(), head_units(), line_of_row_));
+    if (const Outcome written =
+            work::write_whole(file, readings_text(draft_->now(), head_units(), line_of_row_));
         !written) {
       fault_ = text(written.problems());
       return;
@@ -303,6 +310,11 @@ void Desk::ask_forecast() {
   if (worked_ && worked_->analysed) readings = worked_->readings_file;
   forecast_job_.ask(
       {session_, shop_.files[static_cast<std::size_t>(open_)], readings, policies_[policy], levers_});
+}
+
+void Desk::ask_trends() {
+  view_.trends = {"reading the log ...", {}, {}};
+  if (const bath::Tank* open = tank()) trends_job_.ask({session_, *open});
 }
 
 void Desk::list_bath_types() {
@@ -471,6 +483,10 @@ bool Desk::update() {
   if (auto answer = forecast_job_.take()) {
     changed_ = true;
     forecasted_ = std::move(answer);
+  }
+  if (auto answer = trends_job_.take()) {
+    changed_ = true;
+    if (tank() && answer->tank == tank()->name) view_.trends = std::move(answer->view);
   }
   if (auto came = signing_.take()) {
     changed_ = true;

@@ -13,6 +13,7 @@
 #include "shop_folder.hpp"
 #include "signing.hpp"
 #include "tank_work.hpp"
+#include "trends_work.hpp"
 #include "units.hpp"
 
 namespace bathwright::desktop {
@@ -43,6 +44,7 @@ class Desk {
   void ask();
   void ask_log();
   void ask_forecast();
+  void ask_trends();
   void list_bath_types();
   void log_analysis(const Names& names);
   void issue_slip(const Names& names);
@@ -85,6 +87,7 @@ class Desk {
   LatestJob<Question, Worked> tank_job_;
   LatestJob<LogQuestion, LogNow> log_job_;
   LatestJob<ForecastQuestion, Forecasted> forecast_job_;
+  LatestJob<TrendsQuestion, TrendsAnswer> trends_job_;
 };
 
 }  // namespace bathwright::desktop

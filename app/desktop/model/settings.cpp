@@ -5,7 +5,7 @@
 #include <iterator>
 #include <nlohmann/json.hpp>
 
-#include "whole_file.hpp"
+#include "work/whole_file.hpp"
 
 namespace bathwright::desktop {
 
@@ -33,7 +33,7 @@ Outcome keep(const std::filesystem::path& file, const Settings& settings) {
   const Json kept = {{"shop", settings.shop.string()}, {"scale", settings.scale},
                      {"dark", settings.dark},          {"concentration", settings.concentration},
                      {"volume", settings.volume},      {"temperature", settings.temperature}};
-  return write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
+  return work::write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 
 }  // namespace bathwright::desktop

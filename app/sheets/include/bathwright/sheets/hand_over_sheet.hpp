@@ -2,12 +2,12 @@
 #pragma once
 
 #include <bathwright/hand_over/hand_over.hpp>
-#include <bathwright/sheets/text.hpp>
+#include <bathwright/sheets/page.hpp>
 
 namespace bathwright::sheets {
 
 /// `by` hands over; the name is printed beside the line for the signature of who takes over.
-[[nodiscard]] Lines hand_over_sheet(const hand_over::HandOver& told, const shifts::Calendar& calendar,
-                                    const std::string& by);
+[[nodiscard]] Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& calendar,
+                                  const std::string& by);
 
 }  // namespace bathwright::sheets

@@ -2,7 +2,7 @@
 #pragma once
 
 #include <bathwright/logbook/logbook.hpp>
-#include <bathwright/sheets/text.hpp>
+#include <bathwright/sheets/table.hpp>
 #include <bathwright/shifts/calendar.hpp>
 #include <map>
 
@@ -10,6 +10,10 @@ namespace bathwright::sheets {
 
 /// corrected_by: the numbers of the corrections of an entry, by its own.
 using Corrections = std::map<std::int64_t, std::vector<std::int64_t>>;
+
+/// A row for each entry; the clock as in `log_list`.
+[[nodiscard]] Table log_table(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by,
+                              const std::optional<shifts::Calendar>& calendar);
 
 /// Under the head of each shift; times by the clock of the shop where there is a calendar, else in UTC.
 [[nodiscard]] Lines log_list(const std::vector<logbook::Entry>& entries, const Corrections& corrected_by,

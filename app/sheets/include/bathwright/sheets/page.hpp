@@ -1,7 +1,8 @@
-// A page as what stands on it, whatever it is printed as: text or HTML.
+// A page as what stands on it, whatever it is printed as: text, HTML, or PDF (page_pdf.hpp).
 #pragma once
 
 #include <bathwright/sheets/table.hpp>
+#include <cstdint>
 #include <variant>
 
 namespace bathwright::sheets {
@@ -35,9 +36,17 @@ using SignatureLines = std::vector<SignatureLine>;
 
 using Block = std::variant<Paragraph, Stop, Fields, Table, Task, SignatureLines>;
 
+/// How a section is read, for paper, where room is short.
+enum class Reading : std::uint8_t {
+  working,      ///< with the hands full
+  small_print,  ///< once, before: smaller, in two columns
+  background    ///< at the desk: small print behind everything else, on the back of the sheet
+};
+
 struct Section {
   std::string heading;  ///< empty: none
   std::vector<Block> blocks;
+  Reading reading = Reading::working;
 };
 
 struct Page {

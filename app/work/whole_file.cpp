@@ -3,7 +3,7 @@
 #include <fstream>
 #include <system_error>
 
-namespace bathwright::desktop {
+namespace bathwright::work {
 
 Outcome write_whole(const std::filesystem::path& file, std::string_view contents) {
   std::error_code failed;
@@ -22,4 +22,4 @@ Outcome write_whole(const std::filesystem::path& file, std::string_view contents
   return Done{};
 }
 
-}  // namespace bathwright::desktop
+}  // namespace bathwright::work
