@@ -2,6 +2,7 @@
 #pragma once
 
 #include <bathwright/bath/interlock.hpp>
+#include <bathwright/sheets/text.hpp>
 
 #include "shift_log.hpp"
 
