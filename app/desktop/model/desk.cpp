@@ -3,7 +3,9 @@
 #include <algorithm>
 #include <array>
 #include <bathwright/charts/page_file.hpp>
+#include <bathwright/sheets/hand_over_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
+#include <bathwright/sheets/page_pdf.hpp>
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
 #include <ctime>
@@ -45,6 +47,18 @@ template <class... Cases>
 struct Overloaded : Cases... {
   using Cases::operator()...;
 };
+
+sheets::Paper paper_of(const Settings& settings) {
+  return settings.letter ? sheets::Paper::letter : sheets::Paper::a4;
+}
+
+/// What came of printing, in words: what is signed stands whether or not a file of it could be written.
+std::string print(const sheets::Page& page, sheets::Paper paper, const std::filesystem::path& file) {
+  const auto pdf = sheets::pdf_of(page, paper);
+  const Outcome written = pdf ? work::write_whole(file, *pdf) : Outcome(pdf.problems());
+  return written ? "To print: " + file.string() + "."
+                 : "It could not be printed: " + text(written.problems());
+}
 
 }  // namespace
 
@@ -216,7 +230,11 @@ void Desk::handle(const Intent& intent) {
                    view_.source.text =
                        work::sources_sheet(asked.species, work::constants_about(asked.species, names));
                  },
-                 [&](const SaveSheet& asked) { save(asked); },
+                 [&](const SaveCharts& asked) { save(asked); },
+                 [&](const SetPaper& asked) {
+                   settings_.letter = asked.letter;
+                   settings_changed();
+                 },
                  [&](const OpenFolder& asked) { open_shop(asked.folder, true); },
                  [&](const OpenDemonstration&) {
                    if (const auto folder = work::demonstration_shop())
@@ -352,8 +370,8 @@ void Desk::log_analysis(const Names& names) {
 void Desk::issue_slip(const Names& names) {
   if (!worked_ || !worked_->analysed || !worked_->sheet || !shown_plan(*worked_, plan_)) return;
   said_.clear();
-  signing_.start([session = signed_by(session_, names), worked = *worked_,
-                  plan = plan_]() -> Result<std::string> {
+  signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_,
+                  paper = paper_of(settings_), folder = printed()]() -> Result<std::string> {
     // The log may have gone on since the readings were worked out.
     const auto fresh = work::analyse(session, *worked.shop, worked.readings_file.string());
     if (!fresh) return fresh.problems();
@@ -372,7 +390,10 @@ void Desk::issue_slip(const Names& names) {
     const auto logged =
         work::log_dose(session, *worked.shop, worked.readings_file.string(), *fresh, doc, true);
     if (!logged) return logged.problems();
-    return "Slip " + std::to_string(*logged->slip) + " is issued, in " + logged->path.string() + ".";
+    const std::optional<work::LoggedDose> issued = *logged;
+    const auto page = work::page_of(session, *worked.shop, {*fresh, sheet, stops, *history, issued});
+    return "Slip " + std::to_string(*logged->slip) + " is issued, in " + logged->path.string() + ". " +
+           print(page, paper, folder / ("slip-" + std::to_string(*logged->slip) + ".pdf"));
   });
 }
 
@@ -433,22 +454,37 @@ void Desk::hand_over(const Names& names) {
     fault_ = "No shifts are set: Settings has them.";
     return;
   }
-  logbook::NewEntry entry;
-  entry.kind = logbook::EntryKind::hand_over;
-  entry.body = work::text_of(work::hand_over_document(*log_.told));
-  log_entry(std::move(entry), names);
+  said_.clear();
+  signing_.start([session = signed_by(session_, names), told = *log_.told, calendar = *log_.calendar,
+                  paper = paper_of(settings_), folder = printed()]() -> Result<std::string> {
+    logbook::NewEntry entry;
+    entry.kind = logbook::EntryKind::hand_over;
+    entry.body = work::text_of(work::hand_over_document(told));
+    const auto logged = work::append_to_log(session, std::move(entry));
+    if (!logged) return logged.problems();
+    return work::words(*logged) + " " +
+           print(sheets::hand_over_page(told, calendar, work::signer(session)), paper,
+                 folder / ("hand-over-" + std::to_string(logged->entry.seq) + ".pdf"));
+  });
 }
 
-void Desk::save(const SaveSheet& asked) {
+void Desk::save(const SaveCharts& asked) {
   fault_.clear();
-  Outcome saved =
-      Problem{Fault::bad_input, asked.file, "there is nothing to save yet", "", "Work it out first."};
-  if (asked.sheet == Sheet::forecast && forecasted_ && !forecasted_->page.charts.empty())
-    saved = charts::write_page(asked.file, forecasted_->page);
+  charts::Page page;
+  if (asked.charts == Charts::forecast && forecasted_) page = forecasted_->page;
+  if (asked.charts == Charts::trends) page = {tank()->name, {"control charts"}, view_.trends.charts, ""};
+  const Outcome saved = page.charts.empty()
+                            ? Outcome(Problem{Fault::bad_input, asked.file, "there is nothing to save yet",
+                                              "", "Work it out first."})
+                            : charts::write_page(asked.file, page);
   if (saved)
-    said_ = "Saved as " + asked.file + ".";
+    said_ = "Saved as " + std::filesystem::absolute(asked.file).string() + ".";
   else
     fault_ = text(saved.problems());
+}
+
+std::filesystem::path Desk::printed() const {
+  return std::filesystem::path(session_.log_file).parent_path() / "printed";
 }
 
 bool Desk::update() {
@@ -520,13 +556,14 @@ void Desk::show() {
                     index_of(Units::temperatures(), settings_.temperature),
                     settings_.scale,
                     settings_.dark,
-                    ""};
+                    settings_.letter};
   if (open_ < 0) return;
   view_.status.doing = signing_.busy()           ? "signing ..."
                        : forecast_job_.working() ? "forecasting ..."
                        : tank_job_.working()     ? "working out ..."
                        : log_job_.working()      ? "reading the log ..."
                                                  : "";
+  view_.status.said = said_;
   view_.status.log = "log: " + session_.log_file;
   view_.line = line_view(shop_, log_, open_);
   view_.tank_title = tank()->name;

@@ -52,7 +52,9 @@ class Desk {
   void admit(const AdmitPerson& admit);
   void set_shifts(const SetShifts& set);
   void hand_over(const Names& names);
-  void save(const SaveSheet& save);
+  void save(const SaveCharts& save);
+  /// Where slips and hand-overs go as PDF: beside the log.
+  [[nodiscard]] std::filesystem::path printed() const;
   void settings_changed();
   void show();
   [[nodiscard]] std::filesystem::path draft_file() const;

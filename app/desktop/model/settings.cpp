@@ -26,13 +26,18 @@ Settings kept_settings(const std::filesystem::path& file) {
   if (kept.contains("scale") && kept["scale"].is_number())
     settings.scale = std::clamp(kept["scale"].get<float>(), 0.0F, 2.0F);
   settings.dark = kept.contains("dark") && kept["dark"] == true;
+  settings.letter = kept.contains("letter") && kept["letter"] == true;
   return settings;
 }
 
 Outcome keep(const std::filesystem::path& file, const Settings& settings) {
-  const Json kept = {{"shop", settings.shop.string()}, {"scale", settings.scale},
-                     {"dark", settings.dark},          {"concentration", settings.concentration},
-                     {"volume", settings.volume},      {"temperature", settings.temperature}};
+  const Json kept = {{"shop", settings.shop.string()},
+                     {"scale", settings.scale},
+                     {"dark", settings.dark},
+                     {"letter", settings.letter},
+                     {"concentration", settings.concentration},
+                     {"volume", settings.volume},
+                     {"temperature", settings.temperature}};
   return work::write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 

@@ -67,7 +67,7 @@ void draw_page(const DeskView& view, PanelState& state, const Look& look, Intent
     case PageName::forecast:
       return draw_forecast(view.forecast, view.tank_title, state, look, out);
     case PageName::trends:
-      return draw_trends(view.trends, view.tank_title, look);
+      return draw_trends(view.trends, view.tank_title, state, look, out);
     case PageName::log:
       return draw_log(view.log, state, look, out);
     case PageName::hand_over:
@@ -120,6 +120,8 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     const std::string words = view.status.log + "     " + view.status.renderer + "     " + view.status.doing;
     if (!view.fault.empty())
       said(look, look.palette.stop, view.fault.substr(0, view.fault.find('\n')));
+    else if (!view.status.said.empty())
+      said(look, look.palette.accent, view.status.said);
     else
       quiet(look, words);
   }

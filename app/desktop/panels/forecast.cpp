@@ -103,7 +103,7 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
   note_place(look, "forecast file");
   ImGui::SameLine();
   const bool may_save = !state.file.empty() && !view.charts.empty();
-  if (button(look, "Save the charts", may_save)) out.emplace_back(SaveSheet{Sheet::forecast, state.file});
+  if (button(look, "Save the charts", may_save)) out.emplace_back(SaveCharts{Charts::forecast, state.file});
   for (const std::string& note : view.notes) quiet(look, note);
   ImGui::EndChild();
   ImGui::SameLine(0, look.px(16));

@@ -98,10 +98,13 @@ struct ShowEntry {
 struct AskSource {
   std::string species;
 };
-enum class Sheet : std::uint8_t { slip, hand_over, forecast, trends };
-struct SaveSheet {
-  Sheet sheet;
+enum class Charts : std::uint8_t { forecast, trends };
+struct SaveCharts {
+  Charts charts;
   std::string file;
+};
+struct SetPaper {
+  bool letter;  ///< else A4
 };
 struct OpenFolder {
   std::string folder;
@@ -118,7 +121,7 @@ struct SetUnits {
 using Intent = std::variant<GoTo, OpenTank, TypeReading, ChooseMethod, UndoTyping, RedoTyping, NewSample,
                             ChoosePlan, DragAmount, AddChemical, BackToPlan, LogAnalysis, IssueSlip, StepDone,
                             ApproveSlip, CloseSlip, HandOver, SetShifts, AdmitPerson, ChoosePolicy, MoveLever,
-                            StopSampling, FilterLog, ShowEntry, AskSource, SaveSheet, OpenFolder,
+                            StopSampling, FilterLog, ShowEntry, AskSource, SaveCharts, SetPaper, OpenFolder,
                             OpenDemonstration, SetLook, SetUnits>;
 
 }  // namespace bathwright::desktop

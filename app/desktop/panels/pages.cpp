@@ -36,7 +36,8 @@ bool choose(const char* label, const std::vector<std::string>& all, int& chosen,
 
 }  // namespace
 
-void draw_trends(const TrendsView& view, const std::string& tank, const Look& look) {
+void draw_trends(const TrendsView& view, const std::string& tank, PanelState& state, const Look& look,
+                 Intents& out) {
   page_title(look, tank + ": trends");
   if (!view.empty.empty()) {
     said(look, look.palette.ink, view.empty);
@@ -44,6 +45,11 @@ void draw_trends(const TrendsView& view, const std::string& tank, const Look& lo
   }
   for (const std::string& finding : view.findings)
     standing(look, static_cast<int>(charts::State::act), finding);
+  ImGui::SetNextItemWidth(look.px(230));
+  ImGui::InputTextWithHint("##file", "trends.pdf, .svg or .png", &state.file);
+  ImGui::SameLine();
+  if (button(look, "Save the charts", !state.file.empty() && !view.charts.empty()))
+    out.emplace_back(SaveCharts{Charts::trends, state.file});
   constexpr float height = 220;
   const float width = ImGui::GetContentRegionAvail().x / look.scale;
   for (const charts::Chart& chart : view.charts) draw_plot(chart, width, height, look);
@@ -167,6 +173,10 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   }
   bool dark = settings.dark;
   if (ImGui::Checkbox("dark page", &dark)) out.emplace_back(SetLook{settings.scale, dark});
+  heading(look, "Paper of slips and hand-overs");
+  if (ImGui::RadioButton("A4", !settings.letter)) out.emplace_back(SetPaper{false});
+  ImGui::SameLine();
+  if (ImGui::RadioButton("Letter", settings.letter)) out.emplace_back(SetPaper{true});
   heading(look, "Shifts");
   quiet(look, view.hand_over.shifts_set ? "Set: " + view.shift.shift : "None are set.");
   static const std::vector<std::string> patterns{"3x8", "2x12"};

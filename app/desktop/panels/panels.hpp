@@ -54,7 +54,8 @@ void draw_shift(const ShiftView& view, const Look& look, Intents& out);
 // The other pages.
 void draw_forecast(const ForecastView& view, const std::string& tank, PanelState& state, const Look& look,
                    Intents& out);
-void draw_trends(const TrendsView& view, const std::string& tank, const Look& look);
+void draw_trends(const TrendsView& view, const std::string& tank, PanelState& state, const Look& look,
+                 Intents& out);
 void draw_log(const LogView& view, PanelState& state, const Look& look, Intents& out);
 void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& state, const Look& look,
                     Intents& out);

@@ -199,8 +199,7 @@ struct SettingsView {
   std::vector<std::string> concentrations, volumes, temperatures;
   int concentration = 0, volume = 0, temperature = 0;
   float scale = 1;
-  bool dark = false;
-  std::string fault;
+  bool dark = false, letter = false;
 };
 
 struct SourceView {
@@ -209,7 +208,7 @@ struct SourceView {
 };
 
 struct StatusView {
-  std::string renderer, log, doing;
+  std::string renderer, log, doing, said;  ///< `said`: what came of the last thing asked
 };
 
 struct DeskView {

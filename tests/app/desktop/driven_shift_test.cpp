@@ -96,6 +96,7 @@ TEST_CASE("a shift's work at the window", "[desktop][window]") {
   driver.click("Issue the slip");
   REQUIRE(driver.until([&] { return driver.view().slip.number > 0 && !driver.desk().working(); }));
   const std::int64_t slip = driver.view().slip.number;
+  CHECK(std::filesystem::exists(shop / "printed" / ("slip-" + std::to_string(slip) + ".pdf")));
   // Who made it may not stand for it as well.
   driver.click("I have read it and stand for it");
   REQUIRE(driver.until([&] { return !driver.view().sign.fault.empty() && !driver.desk().working(); }));
