@@ -15,6 +15,7 @@ namespace {
 
 struct Options {
   bool issue_slip = false;
+  bool take_out = false;
   std::string own_plan;  ///< file; empty: the planner's
   int samples = dosing::Sampling{}.samples;
   PrintedFiles printed;
@@ -30,9 +31,10 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   constexpr std::size_t earlier_results = 3;
   const auto history = history_of(context, shop->tank.name, earlier_results, analysed->logged_as);
   if (!history) return fail(context, history.problems());
+  dosing::Request request = request_for(analysis, options.samples);
+  request.bring_down = options.take_out;
   const auto sheet = options.own_plan.empty()
-                         ? dosing::plan_additions(shop->tank, shop->chemistry, analysis.state,
-                                                  request_for(analysis, options.samples))
+                         ? dosing::plan_additions(shop->tank, shop->chemistry, analysis.state, request)
                          : check_own_plan(*shop, analysis.state, options.own_plan);
   if (!sheet) return fail(context, sheet.problems());
   const auto stops = slip_stops(shop->tank, *analysed, *sheet, *history);
@@ -78,6 +80,8 @@ void add_dose(CLI::App& program, Context& context, Action& action) {
       program.add_subcommand("dose", "the addition sheet: what to weigh out, in what order")->fallthrough();
   auto options = std::make_shared<Options>();
   verb->add_flag("--slip", options->issue_slip, "issues the best plan as a numbered slip of the log");
+  verb->add_flag("--take-out", options->take_out,
+                 "plans with bath taken out too, where something is strong inside its window");
   verb->add_option("--plan", options->own_plan,
                    "checks this list of additions in place of a plan of its own, TOML")
       ->check(CLI::ExistingFile);

@@ -121,16 +121,29 @@ Json json_of(const sheets::ForecastPage& page) {
   if (page.steady_state)
     for (std::size_t q = 0; q < type.quantities.size(); ++q)
       doc["steady_state"][type.quantities[q].id] = (*page.steady_state)[q];
+  doc["not_found"] = Json::array();
+  if (!page.steady_state)
+    doc["not_found"].push_back({{"what", "steady_state"}, {"limit", nullptr}, {"why", page.why_unsettled}});
+  const auto from_day = [&](const std::optional<forecast::FromDay>& from) {
+    return from ? Json{{"day", from->day}, {"date", date(from->day)}, {"why", from->why}} : Json();
+  };
+  doc["indicative"] = from_day(page.run.indicative);
+  doc["beyond"] = from_day(page.run.beyond);
   doc["bleed_to_hold"] = Json::object();
   doc["largest_load"] = Json::object();
   for (const auto& bleed : page.bleeds) {
-    doc["bleed_to_hold"][bleed.limit] = bleed.litres_per_day;
+    doc["bleed_to_hold"][bleed.limit] = or_null(bleed.litres_per_day);
     doc["largest_load"][bleed.limit] = or_null(bleed.load);
+    for (const auto& [what, why] :
+         {std::pair{"bleed_to_hold", bleed.why_no_bleed}, std::pair{"largest_load", bleed.why_no_load}})
+      if (!why.empty()) doc["not_found"].push_back({{"what", what}, {"limit", bleed.limit}, {"why", why}});
   }
   doc["series"] = Json::array();
   for (const forecast::Day& day : page.run.days) {
-    Json row{
-        {"day", day.day}, {"concentrations", Json::object()}, {"headroom", Json::object()}, {"pH", day.pH}};
+    Json row{{"day", day.day},
+             {"concentrations", Json::object()},
+             {"headroom", Json::object()},
+             {"pH", std::isnan(day.pH) ? Json() : Json(day.pH)}};
     for (std::size_t q = 0; q < type.quantities.size(); ++q)
       row["concentrations"][type.quantities[q].id] = day.quantity_g_per_L[q];
     for (std::size_t s = 0; s < type.solids.size(); ++s)
@@ -205,22 +218,29 @@ Outcome write_csv(const std::string& path, const sheets::ForecastPage& page) {
 }
 
 /// The bleed that holds each level that rises to its limit and that nobody puts back, and the work that the
-/// policy's own bleed can carry.
-Result<std::vector<sheets::BleedToHold>> bleeds(const Forecast& forecast, const bath::TankState& start,
-                                                const std::vector<forecast::LimitMet>& limits) {
+/// policy's own bleed can carry. What cannot be found says why.
+std::vector<sheets::BleedToHold> bleeds(const Forecast& forecast, const bath::TankState& start,
+                                        const std::vector<forecast::LimitMet>& limits) {
   std::vector<sheets::BleedToHold> all;
   for (const auto& limit : limits) {
     if (limit.quantity.empty() || !limit.from_below || limit.share == 0 ||
         limit.cause != forecast::Cause::by_product)
       continue;
     const auto bleed = forecast.bleed_to_hold(start, limit.quantity, limit.g_per_L);
-    if (!bleed) return bleed.problems();
-    if (!*bleed) continue;
+    if (bleed && !*bleed) continue;
+    sheets::BleedToHold held;
+    held.limit = forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
+                 units::significant(limit.g_per_L) + " g/L";
+    if (bleed)
+      held.litres_per_day = *bleed;
+    else
+      held.why_no_bleed = text(bleed.problems());
     const auto load = forecast.largest_load(start, limit.quantity, limit.g_per_L);
-    if (!load) return load.problems();
-    all.push_back({forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
-                       units::significant(limit.g_per_L) + " g/L",
-                   **bleed, *load});
+    if (load)
+      held.load = *load;
+    else
+      held.why_no_load = text(load.problems());
+    all.push_back(std::move(held));
   }
   return all;
 }
@@ -302,13 +322,9 @@ int run(const Context& context, const Options& options) {
                             start->read.from,
                             {},
                             {}};
-  auto held = bleeds(*forecast, start->state, page.limits);
-  if (!held) return fail(context, held.problems());
-  page.bleeds = *std::move(held);
+  page.bleeds = bleeds(*forecast, start->state, page.limits);
   if (options.samples > 0) {
-    auto moved = forecast->sensitivity(start->state);
-    if (!moved) return fail(context, moved.problems());
-    page.sensitivity = *std::move(moved);
+    if (auto moved = forecast->sensitivity(start->state)) page.sensitivity = *std::move(moved);
   }
   if (!options.against.empty()) {
     auto beside = others(options, *shop, start->state);
@@ -341,7 +357,7 @@ void add_forecast(CLI::App& program, Context& context, Action& action) {
   verb->add_option("POLICY", options->policy, "how the shop runs it, TOML")
       ->required()
       ->check(CLI::ExistingFile);
-  verb->add_option("--readings", options->readings, "today's readings; else the last analysis, else the aims")
+  verb->add_option("--readings", options->readings, "today's readings; else the book in --log, else the aims")
       ->check(CLI::ExistingFile);
   verb->add_option("--samples", options->samples, "runs with everything uncertain drawn; 0: none")
       ->check(CLI::Range(0, 100000));

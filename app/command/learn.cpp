@@ -1,6 +1,8 @@
 // bathwright learn TANK POLICY: what the log tells of drag-out, efficiencies, evaporation and side reactions,
 // and what in it does not fit.
 #include <CLI/CLI.hpp>
+#include <algorithm>
+#include <bathwright/forecast/forecast.hpp>
 #include <bathwright/learning/log_history.hpp>
 #include <bathwright/sheets/learning_sheet.hpp>
 #include <bathwright/shopfiles/policy_file.hpp>
@@ -81,8 +83,33 @@ std::string quoted(double value, const std::string& unit) {
   return '"' + units::significant(value) + ' ' + unit + '"';
 }
 
+/// The effects of a use times a factor, as a policy writes them; empty where they go by the state of the
+/// bath.
+std::string effects_of(const bath::Use& use, const forecast::Policy& policy, double factor,
+                       const std::string& unit) {
+  std::map<std::string, double> effects;
+  const auto own = std::ranges::find(policy.own_rates, use.id, &forecast::OwnRates::use);
+  if (own != policy.own_rates.end() && own->effects)
+    effects = *own->effects;
+  else if (!use.rate)
+    for (const auto& effect : use.effects) effects[effect.quantity] = effect.g_per_unit;
+  std::string text;
+  for (const auto& [id, grams] : effects)
+    text += (text.empty() ? "{ \"" : ", \"") + id + "\" = " + quoted(factor * grams, unit);
+  return text.empty() ? "" : text + " }";
+}
+
+/// Whether the policy doubts the load to come more than the log leaves a doubt about the load that was: then
+/// its own figure stays, and what the log ties to the meter says nothing of it.
+bool load_doubted(const learning::Parameter& p, const forecast::Policy& policy) {
+  return std::ranges::any_of(policy.work, [&](const forecast::Work& work) {
+    return work.use == p.use && work.per_shift.u_rel > p.u_ln;
+  });
+}
+
 /// What the policy has keys for, as learned; the labels of the others go into `without_key`.
 std::vector<PolicyFigure> figures_of(const learning::Learned& learned, const forecast::Policy& policy,
+                                     const bath::BathType& type, const std::string& text,
                                      std::vector<std::string>& without_key) {
   std::vector<PolicyFigure> figures;
   for (const learning::Parameter& p : learned.parameters) {
@@ -113,28 +140,99 @@ std::vector<PolicyFigure> figures_of(const learning::Learned& learned, const for
         break;
       }
       case learning::What::work:
-      case learning::What::efficiency:
-      case learning::What::effects:
-        without_key.push_back(p.label + " " + units::significant(p.value, 3) + " " + p.unit);
+        if (!has_figure(text, {"work", p.use, "", "per_shift"})) {
+          without_key.push_back(p.label + " " + units::significant(p.value, 3) + " " + p.unit);
+          break;
+        }
+        figures.push_back({"work", p.use, quoted(p.value, p.unit.substr(0, p.unit.find(' '))), "per_shift"});
+        if (!load_doubted(p, policy)) figures.push_back({"work", p.use, doubt, "uncertainty"});
         break;
+      case learning::What::efficiency:
+        figures.push_back({"work", p.use,
+                           "{ value = " + quoted(p.value, "%") + ", uncertainty = " + doubt + " }",
+                           "cathode_efficiency"});
+        break;
+      case learning::What::effects: {
+        const auto use = std::ranges::find(type.uses, p.use, &bath::Use::id);
+        const std::string effects = effects_of(*use, policy, std::exp(p.ln_factor), p.unit);
+        if (effects.empty()) {
+          without_key.push_back(p.label + " " + units::significant(p.value, 3) + " " + p.unit);
+          break;
+        }
+        figures.push_back({"work", p.use, effects, "effects"});
+        figures.push_back({"work", p.use, doubt, "effects_uncertainty"});
+        break;
+      }
     }
   }
   return figures;
 }
 
+/// The name a forecast gives what is uncertain in a parameter; empty where it draws nothing of it.
+std::string input_of(const learning::Parameter& p, const forecast::Policy& policy) {
+  switch (p.what) {
+    case learning::What::drag_out:
+      return "drag-out";
+    case learning::What::drag_in:
+      return "drag-in";
+    case learning::What::evaporation:
+      return "evaporation";
+    case learning::What::water:
+      return "water";
+    case learning::What::work:
+      return load_doubted(p, policy) ? "" : "work, " + p.use;
+    case learning::What::efficiency:
+      return "cathode efficiency of " + p.use;
+    case learning::What::effects:
+      return "effects of " + p.use;
+    case learning::What::idle_evaporation:
+      break;
+  }
+  return "";
+}
+
+/// What was learned of two figures together, for those that a forecast with this policy draws.
+std::string correlated(const learning::Learned& learned, const forecast::Policy& policy,
+                       const std::vector<std::string>& drawn) {
+  constexpr double least = 0.05, kept = 0.999;  // short of 1, so that rounding contradicts nothing
+  std::string text;
+  const std::size_t n = learned.parameters.size();
+  for (std::size_t i = 0; i < n; ++i)
+    for (std::size_t j = i + 1; j < n; ++j) {
+      const learning::Parameter &one = learned.parameters[i], &other = learned.parameters[j];
+      const double correlation = learned.covariance[i * n + j] /
+                                 std::sqrt(learned.covariance[i * n + i] * learned.covariance[j * n + j]);
+      const std::string first = input_of(one, policy), second = input_of(other, policy);
+      if (!(std::abs(correlation) >= least) || std::ranges::count(drawn, first) == 0 ||
+          std::ranges::count(drawn, second) == 0)
+        continue;
+      text += "\n[[correlated]]\none = \"" + first + "\"\nother = \"" + second +
+              "\"\ncorrelation = " + units::significant(kept * correlation, 4) + "\n";
+    }
+  return text;
+}
+
 /// Writes the policy with what was learned to a new file. What was written is read again before it is kept.
 Result<std::vector<std::string>> write_policy(const std::string& path, const std::string& policy_file,
                                               const learning::Learned& learned,
-                                              const forecast::Policy& policy, const bath::BathType& type) {
+                                              const forecast::Policy& policy, const Shop& shop) {
   if (std::filesystem::exists(path))
     return Problem{Fault::refused, path, "is there already", "a new file",
                    "Name another, or remove it first."};
   std::ifstream in(policy_file, std::ios::binary);
   const std::string text{std::istreambuf_iterator<char>(in), {}};
   std::vector<std::string> without_key;
-  const std::string written = with_figures(text, figures_of(learned, policy, without_key));
-  const auto again = shopfiles::read_policy_text(path, written, type);
+  std::string written = with_figures(without_tables(text, "correlated"),
+                                     figures_of(learned, policy, shop.type(), text, without_key));
+  const auto alone = shopfiles::read_policy_text(path, written, shop.type());
+  if (!alone) return alone.problems();
+  const auto forecast = forecast::Forecast::prepare(shop.tank, shop.chemistry, *alone);
+  if (!forecast) return forecast.problems();
+  written += correlated(learned, policy, forecast->uncertain());
+  const auto again = shopfiles::read_policy_text(path, written, shop.type());
   if (!again) return again.problems();
+  if (const auto ready = forecast::Forecast::prepare(shop.tank, shop.chemistry, *again); !ready)
+    return ready.problems();
   for (const learning::Parameter& p : learned.parameters)
     if (p.what == learning::What::drag_out &&
         std::abs(again->drag_out_L_per_m2.value / (policy.drag_out_L_per_m2.value * std::exp(p.ln_factor)) -
@@ -173,10 +271,12 @@ int run(const Context& context, const std::string& tank_file, const std::string&
                                   read->passed_over};
   sheets::Lines told = sheets::learning_sheet(page);
   if (!write_to.empty()) {
-    const auto without_key = write_policy(write_to, policy_file, *learned, *policy, shop->type());
+    const auto without_key = write_policy(write_to, policy_file, *learned, *policy, *shop);
     if (!without_key) return fail(context, without_key.problems());
     sheets::say(told, "");
-    sheets::say(told, "Written to " + write_to + ", with the uncertainty of each figure.");
+    sheets::say(told, "Written to " + write_to +
+                          ", with the uncertainty of each figure and what ties them together: the bands of a "
+                          "forecast with it are of what this log tells.");
     for (const std::string& figure : *without_key)
       sheets::say(told, "  Not in it, for a policy has no key for it: " + figure + ".", 2);
   }

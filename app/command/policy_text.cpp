@@ -28,7 +28,58 @@ bool sets(const std::string& line, const std::string& key) {
   return equals != std::string::npos && trimmed(line.substr(0, equals)) == key;
 }
 
+/// "{ a = 1, b = 2 }" with an entry of it set anew, or one more at its end.
+std::string with_entry(const std::string& table, const std::string& key, const std::string& value) {
+  std::vector<std::string> settings;
+  std::string one;
+  int depth = 0;
+  bool quoted = false;
+  const auto finish = [&] {
+    if (one = trimmed(one); !one.empty()) settings.push_back(one);
+    one.clear();
+  };
+  for (const char c : table) {
+    if (c == '"') quoted = !quoted;
+    const bool opens = !quoted && c == '{', closes = !quoted && c == '}';
+    if (closes && --depth == 0) break;
+    if (depth == 1 && !quoted && c == ',')
+      finish();
+    else if (depth > 0)
+      one += c;
+    if (opens) ++depth;
+  }
+  finish();
+  const std::string setting = key + " = " + value;
+  const auto there = std::ranges::find_if(settings, [&](const auto& s) { return sets(s, key); });
+  if (there == settings.end())
+    settings.push_back(setting);
+  else
+    *there = setting;
+  std::string all;
+  for (const std::string& s : settings) all += (all.empty() ? "{ " : ", ") + s;
+  return all + " }";
+}
+
+/// What the key of a table is set to; "{}" where it is not.
+std::string value_of(const std::vector<std::string>& lines, const PolicyFigure& figure) {
+  auto line = std::ranges::find(lines, "[" + figure.table + "]", without_comment);
+  if (line == lines.end()) return "{}";
+  for (++line; line != lines.end() && !trimmed(*line).starts_with('['); ++line) {
+    const std::string plain = without_comment(*line);
+    if (sets(plain, figure.key)) return trimmed(plain.substr(plain.find('=') + 1));
+  }
+  return "{}";
+}
+
 void put(std::vector<std::string>& lines, const PolicyFigure& figure) {
+  if (!figure.entry.empty()) {
+    const std::string own = figure.table + "." + figure.key;
+    if (std::ranges::count(lines, "[" + own + "]", without_comment) > 0)
+      put(lines, {own, figure.entry, figure.value});
+    else
+      put(lines, {figure.table, figure.key, with_entry(value_of(lines, figure), figure.entry, figure.value)});
+    return;
+  }
   const std::string setting = figure.key + " = " + figure.value;
   const auto heading = std::ranges::find(lines, "[" + figure.table + "]", without_comment);
   if (heading == lines.end()) {
@@ -54,6 +105,29 @@ std::string with_figures(const std::string& text, const std::vector<PolicyFigure
   for (const PolicyFigure& figure : figures) put(lines, figure);
   std::string out;
   for (const std::string& line : lines) out += line + "\n";
+  return out;
+}
+
+bool has_figure(const std::string& text, const PolicyFigure& figure) {
+  std::vector<std::string> lines;
+  std::istringstream in(text);
+  for (std::string line; std::getline(in, line);) lines.push_back(line);
+  if (const std::string own = "[" + figure.table + "." + figure.key + "]";
+      std::ranges::count(lines, own, without_comment) > 0)
+    return value_of(lines, {figure.table + "." + figure.key, figure.entry, ""}) != "{}";
+  const std::string inside = value_of(lines, figure);
+  return inside.find(figure.entry) != std::string::npos;
+}
+
+std::string without_tables(const std::string& text, const std::string& name) {
+  std::istringstream in(text);
+  std::string out;
+  bool inside = false;
+  for (std::string line; std::getline(in, line);) {
+    const std::string plain = without_comment(line);
+    if (plain.starts_with('[')) inside = plain == "[[" + name + "]]";
+    if (!inside) out += line + "\n";
+  }
   return out;
 }
 

@@ -96,8 +96,7 @@ void add_tank(CLI::App& program, Context& context, Action& action) {
   auto tank = std::make_shared<std::string>();
   auto readings = std::make_shared<std::string>();
   verb->add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
-  verb->add_option("--readings", *readings,
-                   "today's readings; else the last analysis in --log, else the tank's aims")
+  verb->add_option("--readings", *readings, "today's readings; else the book in --log, else the tank's aims")
       ->check(CLI::ExistingFile);
   verb->footer("Example: bathwright tank baths/n-07.toml --readings baths/readings/n-07-morning.toml\n");
   verb->callback([&context, &action, tank, readings] {

@@ -16,6 +16,12 @@ using forecast::Day;
 
 std::string day_of(const std::optional<double>& day) { return day ? fixed(*day, 1) : "not met"; }
 
+/// "9.6 to 32.6", "9.6 or later", "not met".
+std::string between(const forecast::LimitMet& limit) {
+  if (!limit.day_p05) return "not met";
+  return fixed(*limit.day_p05, 1) + (limit.day_p95 ? " to " + fixed(*limit.day_p95, 1) : " or later");
+}
+
 /// "18 Apr 2026", where the policy says when it starts.
 std::string date_of(const ForecastPage& page, const std::optional<double>& day) {
   constexpr std::array months = {"Jan", "Feb", "Mar", "Apr", "May", "Jun",
@@ -26,6 +32,12 @@ std::string date_of(const ForecastPage& page, const std::optional<double>& day) 
   return std::to_string(static_cast<unsigned>(date->day())) + ' ' +
          months[static_cast<unsigned>(date->month()) - 1] + ' ' +
          std::to_string(static_cast<int>(date->year()));
+}
+
+/// "day 41 (18 Apr 2026)".
+std::string day_and_date(const ForecastPage& page, int day) {
+  const std::string date = date_of(page, day);
+  return "day " + std::to_string(day) + (date.empty() ? "" : " (" + date + ')');
 }
 
 std::string per_cent(double share) { return fixed(100 * share, 0) + " %"; }
@@ -61,7 +73,7 @@ Lines levels_by_day(const ForecastPage& page) {
     const Day& day = page.run.days[d];
     std::vector<std::string> row = {std::to_string(day.day)};
     for (const std::size_t q : quantities) row.push_back(figure(day.quantity_g_per_L[q], 3));
-    row.push_back(fixed(day.pH, 2));
+    row.push_back(std::isnan(day.pH) ? "" : fixed(day.pH, 2));
     table.add(row);
   }
   if (page.steady_state) {
@@ -86,7 +98,7 @@ Lines limits_table(const ForecastPage& page) {
     std::vector<std::string> row = {limit.name, day_of(limit.day)};
     if (dated) row.push_back(date_of(page, limit.day));
     if (sampled) {
-      row.push_back(day_of(limit.day_p05) + " to " + day_of(limit.day_p95));
+      row.push_back(between(limit));
       row.push_back(per_cent(limit.share));
     }
     row.emplace_back(forecast::name(limit.cause));
@@ -114,27 +126,31 @@ std::string turnover_of(const ForecastPage& page, const std::string& quantity) {
 
 void say_what_holds(Lines& lines, const ForecastPage& page) {
   for (const BleedToHold& bleed : page.bleeds) {
-    say(lines,
-        "  To hold " + bleed.limit + ": bleed " + figure(bleed.litres_per_day, 3) + " L a day more, " +
-            figure(100 * bleed.litres_per_day / page.tank.working_volume.v, 2) + " % of the tank." +
-            (!bleed.load ? ""
-             : *bleed.load == 0
-                 ? " As it is bled now it carries no work."
-                 : " As it is bled now it carries " + figure(100 * *bleed.load, 2) + " % of this work."),
-        2);
+    std::string text = "  To hold " + bleed.limit + ": ";
+    if (bleed.litres_per_day)
+      text += "bleed " + figure(*bleed.litres_per_day, 3) + " L a day more, " +
+              figure(100 * *bleed.litres_per_day / page.tank.working_volume.v, 2) + " % of the tank.";
+    else
+      text += "no bleed was found. " + bleed.why_no_bleed;
+    if (!bleed.why_no_load.empty())
+      text += " The work that it carries was not found: " + bleed.why_no_load;
+    else if (bleed.load)
+      text += *bleed.load == 0
+                  ? " As it is bled now it carries no work."
+                  : " As it is bled now it carries " + figure(100 * *bleed.load, 2) + " % of this work.";
+    say(lines, text, 2);
   }
 }
 
 void say_influences(Lines& lines, const ForecastPage& page) {
   if (page.sensitivity.empty()) return;
   constexpr std::size_t most_limits = 3, most_inputs = 3;
-  Table table({{"limit"}, {"input"}, {"by", Align::number}, {"moves the day by", Align::number}});
+  Table table({{"limit"}, {"input"}, {"±", Align::number}, {"moves it, days", Align::number}});
   for (std::size_t l = 0; l < std::min(most_limits, page.sensitivity.size()); ++l) {
     const auto& of_limit = page.sensitivity[l];
     for (std::size_t i = 0; i < std::min(most_inputs, of_limit.influences.size()); ++i) {
       const auto& one = of_limit.influences[i];
-      table.add(
-          {i == 0 ? of_limit.limit : "", one.input, "± " + per_cent(one.u_rel), "± " + fixed(one.days, 1)});
+      table.add({i == 0 ? of_limit.limit : "", one.input, per_cent(one.u_rel), fixed(one.days, 1)});
     }
   }
   if (table.empty()) return;
@@ -243,6 +259,12 @@ Lines forecast_sheet(const ForecastPage& page) {
                    " samples of what the policy and the bath type state as uncertain.");
   for (const std::string& note : page.forecast.notes()) say(lines, "Not counted: " + note + '.');
   if (!page.run.ended.empty()) stops(lines, {"it ends before its horizon: " + page.run.ended.front().text()});
+  if (page.run.beyond)
+    stops(lines, {"beyond what the constants describe from " + day_and_date(page, page.run.beyond->day) +
+                  " on: " + page.run.beyond->why + ". Neither pH nor solubility is told from there."});
+  if (page.run.indicative && (!page.run.beyond || page.run.indicative->day < page.run.beyond->day))
+    say(lines, "pH and solubility are indicative only from " + day_and_date(page, page.run.indicative->day) +
+                   " on: " + page.run.indicative->why + '.');
   heading(lines, "Limits met");
   append(lines, limits_table(page));
   std::vector<std::string> told;

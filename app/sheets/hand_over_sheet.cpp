@@ -21,6 +21,12 @@ std::string counts(const std::vector<logbook::Entry>& entries) {
   return text + ".";
 }
 
+std::string approval(const hand_over::HandOver::OpenSlip& open) {
+  if (!open.approved_by.empty()) return "Approved by " + open.approved_by + ".";
+  return open.must_be_approved ? "NOT APPROVED: nothing is added against it before it is."
+                               : "Approved by nobody.";
+}
+
 }  // namespace
 
 Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& calendar,
@@ -29,15 +35,17 @@ Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& cal
   Page page{
       "Hand-over of shift " + told.shift.label, local(told.shift.from) + " to " + local(told.shift.to), {}};
 
-  Section open{"Open slips", {}};
-  if (told.open_slips.empty()) open.blocks.emplace_back(Paragraph{"None."});
-  for (const auto& slip : told.open_slips)
-    open.blocks.emplace_back(Task{"Slip " + std::to_string(slip.seq) + ", tank " + slip.tank,
-                                  "settled _____ by _______",
-                                  {},
-                                  {"of " + local_time(slip.at, calendar) + " by " + slip.by +
-                                   ": find out what of it is in the tank, then log it and close the slip"}});
-  page.add(std::move(open));
+  Section slips{"Open slips", {}};
+  if (told.open_slips.empty()) slips.blocks.emplace_back(Paragraph{"None."});
+  for (const auto& open : told.open_slips)
+    slips.blocks.emplace_back(
+        Task{"Slip " + std::to_string(open.slip.seq) + ", tank " + open.slip.tank,
+             "settled _____ by _______",
+             {},
+             {"of " + local_time(open.slip.at, calendar) + " by " + open.slip.by +
+                  ": find out what of it is in the tank, then log it and close the slip",
+              approval(open)}});
+  page.add(std::move(slips));
 
   Section outside{"Out of window", {}};
   Table out({{"tank"},

@@ -70,11 +70,12 @@ struct Printer {
 };
 
 constexpr std::string_view style = R"(
-@page { margin: 12mm }
-body { font: 9.5pt/1.3 sans-serif; max-width: 190mm; margin: 1em auto; color: #000; background: #fff }
+@page { margin: 8mm 12mm }
+body { font: 8.5pt/1.2 sans-serif; max-width: 190mm; margin: 1em auto; color: #000; background: #fff }
+@media print { body { margin: 0 auto } }
 h1 { font-size: 13pt; margin: 0 }
-h2 { font-size: 10pt; margin: .8em 0 .2em; border-bottom: 1px solid #000 }
-p { margin: .15em 0 }
+h2 { font-size: 9.5pt; margin: .45em 0 .15em; border-bottom: 1px solid #000 }
+p { margin: .1em 0 }
 .split { display: flex; justify-content: space-between; gap: 2em }
 .stop { border: 2px solid #000; padding: .2em .5em }
 dl { display: grid; grid-template-columns: max-content 1fr; gap: .1em 1em; margin: .3em 0 }
@@ -82,12 +83,25 @@ dt { font-weight: bold } dd { margin: 0 }
 table { border-collapse: collapse; margin: .2em 0 }
 th, td { border: 1px solid #999; padding: .1em .5em; text-align: left; font-variant-numeric: tabular-nums }
 .number { text-align: right }
-.task { margin: .3em 0; break-inside: avoid }
+.notes { columns: 2; column-gap: 6mm; font-size: 7.5pt; text-align: left }
+.task { margin: .25em 0; break-inside: avoid }
 .task p + p { margin-left: 1.2em }
-.signatures { display: grid; grid-template-columns: 1fr 1fr; gap: .8em 2em; margin-top: .8em; break-inside: avoid }
+.signatures { display: grid; grid-template-columns: 1fr 1fr; gap: .6em 2em; margin-top: .5em; break-inside: avoid }
 .signatures p { display: flex; gap: .6em }
 .line { flex: 1; border-bottom: 1px solid #000 }
 )";
+
+/// Much text and nothing to write on: in two columns, smaller.
+bool is_fine_print(const Section& section) {
+  constexpr std::size_t much = 400;
+  std::size_t length = 0;
+  for (const Block& block : section.blocks) {
+    const auto* paragraph = std::get_if<Paragraph>(&block);
+    if (!paragraph) return false;
+    length += paragraph->text.size();
+  }
+  return length > much;
+}
 
 }  // namespace
 
@@ -98,7 +112,9 @@ std::string html_of(const Page& page) {
       element("div", element("h1", escaped(page.left)) + element("p", escaped(page.right)), "split") + "\n";
   for (const Section& section : page.sections) {
     if (!section.heading.empty()) out += element("h2", escaped(section.heading)) + "\n";
-    for (const Block& block : section.blocks) out += std::visit(Printer{}, block);
+    std::string blocks;
+    for (const Block& block : section.blocks) blocks += std::visit(Printer{}, block);
+    out += is_fine_print(section) ? element("div", blocks, "notes") + "\n" : blocks;
   }
   return out + "</body>\n</html>\n";
 }

@@ -73,7 +73,17 @@ void append(Lines& lines, const Section& section) {
 Lines text_of(const Page& page) {
   Lines lines;
   title(lines, page.left, page.right);
-  for (const Section& section : page.sections) append(lines, section);
+  Printer printer;
+  for (const Section& section : page.sections) {
+    // A page is printed: its headings are rules already, and every line counts.
+    if (!section.heading.empty()) {
+      Lines head;
+      heading(head, section.heading);
+      printer.lines.push_back(std::move(head.back()));
+    }
+    for (const Block& block : section.blocks) std::visit(printer, block);
+  }
+  append(lines, printer.lines);
   return lines;
 }
 

@@ -143,6 +143,10 @@ Json analysis_document(const bath::Tank& tank, const bath::Chemistry& chemistry,
                                  {"bias_mL", bias.mL},
                                  {"bias_percent", 100 * bias.share},
                                  {"range_mL", {bias.from_mL, bias.to_mL}}});
+  doc["end_points_unknown"] = Json::array();
+  for (const auto& one : analysis.end_points_unknown)
+    doc["end_points_unknown"].push_back(
+        {{"quantity", one.quantity}, {"method", one.method}, {"why", one.why}});
   doc["levels"] = level_list(sheets::judge(tank, chemistry.type(), analysis));
   doc["tank_state"] = {
       {"components", chemistry.components()},

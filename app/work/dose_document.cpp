@@ -12,6 +12,8 @@ Json json_of(const bath::BathType& type, const dosing::Step& step) {
                       {"interlock", check.interlock},
                       {"detail", check.detail}});
   return {{"number", step.number},
+          {"takes_out", step.takes_out},
+          {"shift", step.shift},
           {"chemical", step.chemical},
           {"name", step.name},
           {"amount", step.amount},
@@ -68,6 +70,27 @@ Json json_of(const std::vector<dosing::Removal>& removals) {
   return list;
 }
 
+Json json_of(const std::vector<dosing::Rest>& rest) {
+  Json list = Json::array();
+  for (const auto& one : rest)
+    list.push_back({{"chemical", one.addition.chemical},
+                    {"amount", one.addition.amount},
+                    {"unit", one.addition.unit},
+                    {"evaporate_L", one.evaporate_L}});
+  return list;
+}
+
+Json json_of(const std::vector<dosing::Wait>& waits) {
+  Json list = Json::array();
+  for (const auto& one : waits)
+    list.push_back({{"quantity", one.quantity},
+                    {"use", one.use},
+                    {"units", one.units},
+                    {"unit", one.unit},
+                    {"takes", one.takes}});
+  return list;
+}
+
 Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
   Json additions = Json::array(), steps = Json::array();
   for (const auto& a : plan.additions)
@@ -100,6 +123,8 @@ Json json_of(const bath::BathType& type, const dosing::Plan& plan) {
           {"left_alone", plan.left_alone},
           {"conflicts", plan.conflicts},
           {"keep_apart", plan.keep_apart},
+          {"rest", json_of(plan.rest)},
+          {"waits", json_of(plan.waits)},
           {"removals", json_of(plan.removals)}};
 }
 

@@ -7,10 +7,11 @@ Json hand_over_document(const hand_over::HandOver& told) {
   doc["shift"] = {{"label", told.shift.label},
                   {"from", logbook::iso_utc(told.shift.from)},
                   {"to", logbook::iso_utc(told.shift.to)}};
-  for (const auto& [key, entries] :
-       {std::pair{"entries", &told.entries}, std::pair{"open_slips", &told.open_slips}}) {
-    doc[key] = Json::array();
-    for (const auto& entry : *entries) doc[key].push_back(entry.seq);
+  for (const char* list : {"entries", "open_slips", "slips_not_approved"}) doc[list] = Json::array();
+  for (const auto& entry : told.entries) doc["entries"].push_back(entry.seq);
+  for (const auto& open : told.open_slips) {
+    doc["open_slips"].push_back(open.slip.seq);
+    if (open.approved_by.empty()) doc["slips_not_approved"].push_back(open.slip.seq);
   }
   doc["out_of_window"] = Json::array();
   for (const auto& one : told.out_of_window)

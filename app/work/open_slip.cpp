@@ -1,6 +1,7 @@
 #include "open_slip.hpp"
 
 #include <algorithm>
+#include <bathwright/logbook/approval.hpp>
 
 namespace bathwright::work {
 namespace {
@@ -55,12 +56,14 @@ Result<std::optional<OpenSlip>> open_slip(const logbook::Logbook& log, const std
     for (const Json& step : body["plan"].value("steps", Json::array())) slip.steps.push_back(step_of(step));
   for (const Json& caution : body.is_object() ? body.value("cautions", Json::array()) : Json::array())
     if (caution.is_string()) slip.cautions.push_back(caution.get<std::string>());
+  auto approved = logbook::approved_by(log, entry);
+  if (!approved) return approved.problems();
+  slip.approved_by = *std::move(approved);
   logbook::Filter filter;
   filter.about = slip.seq;
   const auto answers = log.list(filter);
   if (!answers) return answers.problems();
   for (const logbook::Entry& answer : *answers) {
-    if (answer.kind == logbook::EntryKind::slip_approved) slip.approved_by = answer.by;
     if (answer.kind != logbook::EntryKind::addition) continue;
     const auto corrected = log.is_corrected(answer.seq);
     if (!corrected) return corrected.problems();

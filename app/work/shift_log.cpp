@@ -53,7 +53,7 @@ Result<OpenLog> open_log_to_write(const Session& session) {
   const fs::path path = log_path(session);
   std::error_code failure;
   const bool is_new = !fs::exists(path, failure);
-  if (session.log_file.empty()) {
+  if (path.parent_path() == data_folder()) {  // the usual place; another folder is the user's to make
     fs::create_directories(path.parent_path(), failure);
     if (failure)
       return Problem{Fault::io, path.parent_path().string(), failure.message(), "a folder for the shift log",

@@ -22,8 +22,7 @@ namespace bathwright::work {
 Result<logbook::Logbook> open_log_to_read(const Session& session);
 
 /// Opens for writing, with this program's and this station's names. Makes the log, and the data folder where
-/// no
-/// --log was given.
+/// it is to stand there.
 struct OpenLog {
   logbook::Logbook log;
   std::filesystem::path path;

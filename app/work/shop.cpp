@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/bath/quantity_meant.hpp>
 #include <bathwright/described/bath_type_file.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
@@ -41,7 +42,7 @@ Problems unknown_aims(const bath::Tank& tank, const bath::BathType& type) {
       continue;
     }
     if (aim.quantity == "pH" || type.quantity(aim.quantity)) continue;
-    const auto close = nearest(aim.quantity, known);
+    const auto close = bath::quantity_meant(type, aim.quantity);
     problems.push_back({Fault::bad_input, tank.file + ": target: " + aim.quantity,
                         "is not a quantity of " + type.name, "one of " + joined(known),
                         close ? "Did you mean " + *close + "?" : ""});
@@ -75,17 +76,21 @@ Result<Shop> open_shop(const Session& session, const std::string& tank_path) {
                      "Give the tank first, then its readings."};
     return tank.problems();
   }
+  return shop_of(session, *std::move(tank));
+}
+
+Result<Shop> shop_of(const Session& session, bath::Tank tank) {
   const plugin_host::BathTypes types = known_bath_types(session);
-  const bath::BathType* type = types.find(tank->bath_type);
-  if (!type) return unknown_bath_type(*tank, types);
-  if (Problems problems = unknown_aims(*tank, *type); !problems.empty()) return problems;
-  auto chemistry = bath::Chemistry::prepare(*type, tank->temperature, tank->idle_temperature);
+  const bath::BathType* type = types.find(tank.bath_type);
+  if (!type) return unknown_bath_type(tank, types);
+  if (Problems problems = unknown_aims(tank, *type); !problems.empty()) return problems;
+  auto chemistry = bath::Chemistry::prepare(*type, tank.temperature, tank.idle_temperature);
   if (!chemistry) return chemistry.problems();
   const auto listed = std::ranges::find_if(types.list(), [&](const plugin_host::Listed& one) {
     return one.state == plugin_host::State::ready && one.id == type->id;
   });
   const std::string hash = listed == types.list().end() ? "" : " sha256:" + listed->sha256;
-  return Shop{*std::move(tank), *std::move(chemistry), type->id + " " + type->version + hash};
+  return Shop{std::move(tank), *std::move(chemistry), type->id + " " + type->version + hash};
 }
 
 Result<bath::TankState> state_at_aims(const Shop& shop) {

@@ -4,6 +4,7 @@
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 #include <bathwright/units/show.hpp>
+#include <cmath>
 #include <fstream>
 #include <iterator>
 
@@ -22,7 +23,29 @@ Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
   return shop.chemistry.state_from(g_per_L, *last.book.pH, last.volume, last.temperature);
 }
 
-/// What the log has of the tank up to these readings.
+/// The tank as the book has it now: its last analysis carried through what was logged since.
+Result<StartingState> from_book(const analysis::Book& book, const LastAnalysis& last, const Shop& shop) {
+  const analysis::Carried& carried = *book.carried;
+  bath::TankState state{carried.component_mol, carried.volume_L, last.temperature};
+  constexpr int most_rounds = 60;
+  for (int round = 0; round < most_rounds; ++round) {
+    const double missing = carried.volume_L - shop.chemistry.volume_L(state);
+    state.water_kg += missing;
+    if (std::abs(missing) < 1e-12 * carried.volume_L) break;
+  }
+  const auto solved = shop.chemistry.speciate(state);
+  if (!solved) return solved.problems();
+  const std::size_t counted = carried.counted.size();
+  std::string from = "analysis of " + book.from;
+  from += counted == 0 ? ", carried to now: nothing was logged since"
+                       : ", carried through " + std::to_string(counted) +
+                             (counted == 1 ? " entry logged since" : " entries logged since");
+  std::vector<std::string> left_out;
+  for (const std::string& one : carried.not_counted) left_out.push_back("Not in the book: " + one + ".");
+  return StartingState{std::move(state), {from, last.temperature, solved->pH(), left_out}};
+}
+
+/// What the log has of the tank up to these readings; without any, up to now.
 Result<std::optional<book::FromLog>> book_before(const Session& session, const Shop& shop,
                                                  const std::string& readings_path,
                                                  const std::string& sampled) {
@@ -119,10 +142,18 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
   const auto last = last_analysis(session, shop.tank.name);
   if (!last) return last.problems();
   if (*last) {
+    const auto book = book_before(session, shop, "", "");
+    if (!book) return book.problems();
+    constexpr double oldest_days = 31;  // beyond it what nobody logged outweighs what was
+    const double days = *book ? (*book)->hours / 24 : 0;
+    if (*book && (*book)->book.carried && days <= oldest_days) return from_book((*book)->book, **last, shop);
+    const std::string age = days <= oldest_days ? ""
+                                                : ", " + std::to_string(std::lround(days)) +
+                                                      " days old: too old to be carried through the log";
     auto state = state_of(**last, shop);
     if (!state) return state.problems();
     return StartingState{*std::move(state),
-                         {"analysis of " + (*last)->book.from, (*last)->temperature, *(*last)->book.pH,
+                         {"analysis of " + (*last)->book.from + age, (*last)->temperature, *(*last)->book.pH,
                           (*last)->changed_since}};
   }
   auto state = state_at_aims(shop);

@@ -1,4 +1,4 @@
-// The state a verb starts from: today's readings, else the last logged analysis, else the tank's aims.
+// The state a verb starts from: today's readings, else the book of the log, else the tank's aims.
 #pragma once
 
 #include <bathwright/sheets/tank_sheet.hpp>

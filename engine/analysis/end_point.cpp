@@ -14,7 +14,8 @@ using speciation::Composition;
 using speciation::Equilibria;
 
 constexpr units::Celsius laboratory{25};
-constexpr double water_kg_per_L = 0.997;  // at 25 degC; Kell 1975
+constexpr std::string_view edta_as_sold = "Na2H2(edta)";  // dihydrate; its water does not matter here
+constexpr double water_kg_per_L = 0.997;                  // at 25 degC; Kell 1975
 
 /// The built-in equilibria of explicit complexes, and those of the bench alone.
 const Equilibria& bench_equilibria() {
@@ -97,6 +98,17 @@ class Bench {
     const auto solved = solve(task, change.held_pH);
     if (!solved) return solved.problems();
     return -solved->solid_mol[*system_->solid(change.solid)];
+  }
+
+  /// -log10 of the free molality of a metal.
+  [[nodiscard]] Result<double> pM(const std::string& metal, const Composition& totals,
+                                  std::optional<double> pH) const {
+    const auto species = std::ranges::find(system_->species(), metal, &speciation::SystemSpecies::name);
+    if (species == system_->species().end())
+      return Problem{Fault::bad_input, metal, "is not in this flask", "", ""};
+    const auto solved = solve(task_of(totals), pH);
+    if (!solved) return solved.problems();
+    return -std::log10(solved->molality[static_cast<std::size_t>(species - system_->species().begin())]);
   }
 
  private:
@@ -182,6 +194,32 @@ Result<double> beyond_by_solid(const TitratedFlask& flask, const Change& change,
   return Problem{Fault::not_converged, change.solid, "its first appearance was not found", "", ""};
 }
 
+/// The titrant after which no more than 10^-pM of the metal is free, the pH held by the buffer.
+Result<double> beyond_by_metal(const TitratedFlask& flask, const Change& change, const Composition& titrant,
+                               const Composition& with_reagents) {
+  Composition all = with_reagents;
+  for (const Composition& more : {titrant, Composition{{"Na^+", 0}, {"Cl^-", 0}}})
+    for (const auto& [species, count] : more) all[species] += 0;
+  const auto bench = Bench::prepare(all, flask.water_kg, {"Cl^-", "Na^+"});
+  if (!bench) return bench.problems();
+  // pM rises with the titrant: halving between nine tenths and eleven tenths of the equivalence.
+  double low = -0.1 * flask.equivalence_mol, high = 0.1 * flask.equivalence_mol;
+  constexpr int halvings = 24;
+  for (int turn = 0; turn < halvings; ++turn) {
+    const double beyond = (low + high) / 2;
+    Composition now = with_reagents;
+    for (const auto& [species, count] : titrant) now[species] += count * (flask.equivalence_mol + beyond);
+    const auto pM = bench->pM(change.metal, now, change.held_pH);
+    if (!pM) return pM.problems();
+    (*pM < change.pM ? low : high) = beyond;
+  }
+  constexpr double at_an_end = 0.0999;
+  if (std::abs(low) > at_an_end * flask.equivalence_mol)
+    return Problem{Fault::out_of_range, change.metal,
+                   "the indicator does not change within a tenth of the equivalence", "", ""};
+  return (low + high) / 2;
+}
+
 /// A row of end_points.csv.
 struct EndPoint {
   std::string indicator;
@@ -206,7 +244,7 @@ std::map<std::string, double> amounts(const std::vector<std::string>& list, doub
 const EndPoint* end_point_of(const std::string& method) {
   static const auto all = [] {
     const auto table = data::built_in_table(
-        "analysis/end_points.csv", {"flask_mL", "start_pH", "end_pH", "from_pH", "to_pH", "held_pH"});
+        "analysis/end_points.csv", {"flask_mL", "start_pH", "end_pH", "from_pH", "to_pH", "held_pH", "pM"});
     const auto given = [](double value) {
       return std::isfinite(value) ? std::optional(value) : std::nullopt;
     };
@@ -225,6 +263,8 @@ const EndPoint* end_point_of(const std::string& method) {
       e.change.solid = row["solid"];
       e.change.forms = row.list("forms");
       e.change.held_pH = given(row.number("held_pH"));
+      e.change.metal = row["metal"];
+      e.change.pM = given(row.number("pM")).value_or(0);
       read.emplace(row["method"], std::move(e));
     }
     return read;
@@ -236,21 +276,26 @@ const EndPoint* end_point_of(const std::string& method) {
 }  // namespace
 
 Result<double> titrant_beyond_equivalence(const TitratedFlask& flask, const Change& change) {
-  const auto titrant = basis_of(flask.titrant);
+  const auto titrant = basis_of(flask.titrant == "EDTA" ? std::string(edta_as_sold) : flask.titrant);
   if (!titrant) return titrant.problems();
   Composition with_reagents = flask.holds_mol;
   for (const auto& [formula, mol] : change.adds_mol)
     if (const auto added = add(with_reagents, formula, mol); !added) return added.problems();
+  if (!change.metal.empty()) return beyond_by_metal(flask, change, *titrant, with_reagents);
   return change.solid.empty() ? beyond_by_pH(flask, change, *titrant, std::move(with_reagents))
                               : beyond_by_solid(flask, change, *titrant, with_reagents);
 }
 
-std::optional<EndPointBias> end_point_bias(const Titration& t, const Method& method,
-                                           const bath::Quantity& quantity, const bath::Chemistry& chemistry,
-                                           const bath::TankState& state) {
+Result<EndPointBias> end_point_bias(const Titration& t, const Method& method, const bath::Quantity& quantity,
+                                    const bath::Chemistry& chemistry, const bath::TankState& state) {
+  const auto unknown = [&](std::string why) {
+    return Problem{Fault::out_of_range, method.id, std::move(why), "", ""};
+  };
   const EndPoint* row = end_point_of(method.id);
   const auto per_analyte = quantity_per_analyte(method, quantity);
-  if (!row || !per_analyte || method.kind != Kind::direct) return std::nullopt;
+  if (method.kind != Kind::direct) return unknown("only the end points of direct titrations are computed");
+  if (!row) return unknown("no constant is known of what " + method.indicator + " shows");
+  if (!per_analyte) return unknown("the method does not find this quantity");
 
   const double sample_L = t.diluted_to.v > 0 ? t.sample.v * t.aliquot.v / t.diluted_to.v : t.sample.v;
   const double share = sample_L / chemistry.volume_L(state);
@@ -258,32 +303,42 @@ std::optional<EndPointBias> end_point_bias(const Titration& t, const Method& met
   TitratedFlask flask;
   flask.titrant = method.titrant;
   flask.equivalence_mol = analyte_mol / method.mol_per_mol;
-  if (!(flask.equivalence_mol > 0)) return std::nullopt;
+  if (!(flask.equivalence_mol > 0)) return unknown("there is none of it in the flask");
   const double titrant_mol_per_L = t.titrant.v * t.factor;
   flask.water_kg = (row->flask_L + flask.equivalence_mol / titrant_mol_per_L) * water_kg_per_L;
   if (row->contains) {
     for (const auto& [formula, count] : *row->contains)
-      if (!add(flask.holds_mol, formula, count * analyte_mol)) return std::nullopt;
+      if (const Outcome added = add(flask.holds_mol, formula, count * analyte_mol); !added)
+        return added.problems();
   } else {
-    for (std::size_t i = 0; i < state.component_mol.size(); ++i)
-      flask.holds_mol[chemistry.components()[i]] = state.component_mol[i] * share;
+    // A component that a bath counts as a whole (iron as Fe(CN)6^4-) is a species of the bench.
+    for (std::size_t i = 0; i < state.component_mol.size(); ++i) {
+      if (state.component_mol[i] == 0) continue;
+      if (const Outcome added =
+              add(flask.holds_mol, chemistry.components()[i], state.component_mol[i] * share);
+          !added)
+        return added.problems();
+    }
   }
 
-  const auto mL_at = [&](std::optional<double> pH) -> std::optional<double> {
+  const auto mL_at = [&](std::optional<double> pH) -> Result<double> {
     Change change = row->change;
     if (pH) change.pH = *pH;
     const auto beyond = titrant_beyond_equivalence(flask, change);
-    if (!beyond) return std::nullopt;
+    if (!beyond) return beyond.problems();
     return *beyond / titrant_mol_per_L * 1000;
   };
   const auto mL = mL_at(std::nullopt);
-  if (!mL) return std::nullopt;
+  if (!mL)
+    return Problem{Fault::not_converged, method.id,
+                   "its flask could not be solved: " + mL.problems().front().text(), "", ""};
   EndPointBias bias{
       quantity.id, method.id, row->indicator, *mL, *mL * titrant_mol_per_L / 1000 / flask.equivalence_mol,
       *mL,         *mL};
-  if (row->from_pH > 0) {
-    bias.from_mL = mL_at(row->from_pH).value_or(*mL);
-    bias.to_mL = mL_at(row->to_pH).value_or(*mL);
+  if (row->from_pH > 0 && row->change.metal.empty()) {
+    const auto from = mL_at(row->from_pH), to = mL_at(row->to_pH);
+    if (from) bias.from_mL = *from;
+    if (to) bias.to_mL = *to;
   }
   return bias;
 }

@@ -501,7 +501,14 @@ void Evaluation::look_at_end_points() {
   for (const Titration& titration : titrations_) {
     const auto bias = end_point_bias(titration, *method(titration.method),
                                      *type_.quantity(titration.quantity), chemistry_, analysis_.state);
-    if (!bias) continue;
+    if (!bias) {
+      analysis_.end_points_unknown.push_back(
+          {titration.quantity, titration.method, bias.problems().front().what});
+      if (bias.problems().front().kind != Fault::out_of_range)
+        note(fmt::format("{}: where the end point of {} lies was not computed: {}", titration.quantity,
+                         titration.method, bias.problems().front().what));
+      continue;
+    }
     analysis_.end_points.push_back(*bias);
     const auto level = std::ranges::find(analysis_.results, bias->quantity, &LevelFound::quantity);
     if (level == analysis_.results.end() ||

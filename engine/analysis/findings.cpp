@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <bathwright/analysis/titration.hpp>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/bath/quantity_meant.hpp>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
@@ -29,8 +30,10 @@ Result<const bath::Quantity*> quantity_to_find(const bath::BathType& type, const
   if (!quantity) {
     std::vector<std::string> ids;
     for (const bath::Quantity& q : type.quantities) ids.push_back(q.id);
+    const auto meant = bath::quantity_meant(type, id);
     return Problem{Fault::bad_input, where, fmt::format("\"{}\" is not a quantity of {}", id, type.name),
-                   fmt::format("one of {}", fmt::join(ids, ", ")), did_you_mean(id, ids)};
+                   fmt::format("one of {}", fmt::join(ids, ", ")),
+                   meant ? fmt::format("Did you mean {}?", *meant) : ""};
   }
   for (const bath::Component& component : type.components) {
     if (component.found_by == bath::FoundBy::pH && quantity->counts.contains(component.species))

@@ -15,6 +15,17 @@ const Quantity* BathType::quantity(std::string_view wanted) const {
   return found == quantities.end() ? nullptr : &*found;
 }
 
+const AdditionRule* BathType::addition_rule(const matter::StockChemical& stock) const {
+  const auto same = std::ranges::find(additions, stock.id, &AdditionRule::supply);
+  if (same != additions.end()) return &*same;
+  if (!stock.liquid) return nullptr;
+  const auto other_strength = std::ranges::find_if(additions, [&](const AdditionRule& rule) {
+    const auto* ordered = matter::StockCatalogue::built_in().find(rule.supply);
+    return ordered && ordered->liquid && ordered->formula == stock.formula;
+  });
+  return other_strength == additions.end() ? nullptr : &*other_strength;
+}
+
 bool BathType::acid_by_pH() const {
   return std::any_of(components.begin(), components.end(),
                      [](const Component& c) { return c.found_by == FoundBy::pH; });

@@ -14,9 +14,7 @@ constexpr double least_molality = 1e-4;
 constexpr double strong_acid_fraction =
     0.5;  // common practice: water spits in acid of more than half its mass
 
-bool is_own(const BathType& type, const StockChemical& stock) {
-  return std::ranges::find(type.additions, stock.id, &AdditionRule::supply) != type.additions.end();
-}
+bool is_own(const BathType& type, const StockChemical& stock) { return type.addition_rule(stock) != nullptr; }
 
 bool is_any(const StockChemical& stock, const std::vector<std::string>& kinds) {
   return std::ranges::any_of(
@@ -34,6 +32,20 @@ bool on_side_a(const StockChemical& stock, const Incompatibility& pair) {
 }
 bool on_side_b(const StockChemical& stock, const Incompatibility& pair) {
   return is_any(stock, pair.kinds_b);
+}
+
+/// Whether a chemical is of the side of a pair that the bath's own chemicals are of, and of no other: acid in
+/// an acid bath, where what the pair keeps out is the sulfide.
+bool on_own_side(const BathType& type, const StockChemical& stock, const Incompatibility& pair) {
+  const bool a = on_side_a(stock, pair), b = on_side_b(stock, pair);
+  if (!has_sides(pair) || a == b) return false;
+  bool own_a = false, own_b = false;
+  for (const AdditionRule& rule : type.additions)
+    if (const StockChemical* own = matter::StockCatalogue::built_in().find(rule.supply)) {
+      own_a |= on_side_a(*own, pair);
+      own_b |= on_side_b(*own, pair);
+    }
+  return a ? own_a && !own_b : own_b && !own_a;
 }
 
 Level level_of(const Incompatibility& pair) {
@@ -54,7 +66,7 @@ bool keeps_out(const BathType& type, const Incompatible& rule, const StockChemic
     const bool of_it = lists(stock, *pair) || is_any(stock, pair->kinds_a) || is_any(stock, pair->kinds_b);
     return of_it && matter::holds_cyanide(stock.formula) != bath_holds_cyanide(type);
   }
-  return pair && lists(stock, *pair) && !is_own(type, stock);
+  return pair && lists(stock, *pair) && !is_own(type, stock) && !on_own_side(type, stock, *pair);
 }
 
 std::optional<Interlock> by_bath_type(const BathType& type, const StockChemical& stock) {

@@ -18,7 +18,11 @@ const Aim* Tank::aim(std::string_view quantity) const {
 const ShelfItem* Tank::on_shelf(std::string_view stock_id) const {
   const auto found =
       std::find_if(shelf.begin(), shelf.end(), [&](const ShelfItem& s) { return s.stock.id == stock_id; });
-  return found == shelf.end() ? nullptr : &*found;
+  if (found != shelf.end()) return &*found;
+  const auto other = std::find_if(shelf.begin(), shelf.end(), [&](const ShelfItem& s) {
+    return std::find(s.stock.aliases.begin(), s.stock.aliases.end(), stock_id) != s.stock.aliases.end();
+  });
+  return other == shelf.end() ? nullptr : &*other;
 }
 
 }  // namespace bathwright::bath

@@ -112,6 +112,7 @@ class Reading {
     if (Outcome read = read_movements(); !read) return read.problems();
     const auto until = sampled_.value_or(sample_.now);
     const double hours = std::chrono::duration<double, std::ratio<3600>>(until - from_).count();
+    answer_.hours = hours;
     auto carried = carry(*start_, movements_, hours, tank_, chemistry_);
     carried.not_counted.insert(carried.not_counted.end(), not_counted_.begin(), not_counted_.end());
     answer_.book.carried = std::move(carried);

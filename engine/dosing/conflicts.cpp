@@ -63,6 +63,8 @@ std::string words(const Goal& goal, bool upper) {
       return "no more than " + significant(bound, 4) + " L in the tank";
     case Goal::Of::pH:
       return "pH" + side + significant(bound, 3);
+    case Goal::Of::solid:
+      return goal.dissolved;
     case Goal::Of::level:
       return goal.quantity->label + side + significant(bound, 3) + " g/L";
   }
@@ -100,7 +102,9 @@ std::vector<std::string> conflicts(const Settling& settling, const Settled& end,
     const Goal& goal = settling.goals()[first.goal];
     const std::string by = goal.of == Goal::Of::pH       ? significant(miss, 2)
                            : goal.of == Goal::Of::volume ? significant(miss * goal.unit, 2) + " L"
-                                                         : significant(miss * goal.unit, 2) + " g/L";
+                           : goal.of == Goal::Of::solid
+                               ? significant(100 * (std::pow(10, miss) - 1), 2) + " % of saturation"
+                               : significant(miss * goal.unit, 2) + " g/L";
     if (set.size() > 1) {
       std::string together;
       for (const Bound& bound : set)

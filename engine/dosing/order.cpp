@@ -106,13 +106,8 @@ double order_by_role(const BathType& type, double pH, Role role) {
 
 }  // namespace
 
-const AdditionRule* rule_for(const BathType& type, const std::string& stock_id) {
-  const auto found = std::ranges::find(type.additions, stock_id, &AdditionRule::supply);
-  return found == type.additions.end() ? nullptr : &*found;
-}
-
 Role role_of(const BathType& type, double pH, const StockChemical& stock) {
-  const AdditionRule* rule = rule_for(type, stock.id);
+  const AdditionRule* rule = type.addition_rule(stock);
   const bool trims = type.acid_by_pH() || (rule && rule->largest_pH_step > 0);
   if (stock.formula == "H2O") return Role::water;
   if (is(stock, "chromium-6")) return Role::strength;
@@ -137,7 +132,7 @@ Place place_of(const BathType& type, const bath::Held& held, double pH, const St
   Place place;
   place.role = role_of(type, pH, stock);
   place.why = why(type, place.role, stock);
-  const AdditionRule* rule = rule_for(type, stock.id);
+  const AdditionRule* rule = type.addition_rule(stock);
   if (place.role == Role::water) {
     place.key = -1;
     if (pH > alkaline_pH && orders_caustic_first(type) && holds_amphoteric_metal(type)) {

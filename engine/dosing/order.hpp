@@ -29,9 +29,6 @@ struct Place {
   std::string why;  ///< "before the metal, which it must hold in solution"
 };
 
-/// The rule of addition of a chemical; nullptr where the bath type has none.
-[[nodiscard]] const bath::AdditionRule* rule_for(const bath::BathType& type, const std::string& stock_id);
-
 /// The bath type's order where it has one, else the place of its role among those it orders. Water goes
 /// first, but after the caustic of an alkaline bath whose metal it would throw out (zincate, stannate).
 [[nodiscard]] Place place_of(const bath::BathType& type, const bath::Held& held, double pH,

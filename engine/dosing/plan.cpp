@@ -6,6 +6,7 @@
 #include <cmath>
 
 #include "most_certain.hpp"
+#include "order.hpp"
 #include "planner.hpp"
 #include "precipitation.hpp"
 #include "steps.hpp"
@@ -33,9 +34,22 @@ double salt_mol_per_kg(const Chemistry& chemistry, const bath::Brings& brings) {
 bool serves_an_aim(const Tank& tank, const Chemistry& chemistry, const Supply& supply) {
   if (supply.is_water()) return true;
   return std::ranges::any_of(tank.aims, [&](const Aim& aim) {
-    if (aim.quantity == "pH") return supply.brings.component_mol[0] != 0;
+    if (aim.quantity == "pH") return supply.brings.component_mol[0] != 0 || supply.base;
     const Quantity* quantity = chemistry.type().quantity(aim.quantity);
     return quantity && chemistry.quantity_mol(*quantity, supply.brings.component_mol) != 0;
+  });
+}
+
+/// Whether a whole package of a solid fits: where it moves a level by more than its window is wide, no whole
+/// number of them need end inside.
+bool fits_by_the_bag(const Situation& s, const Supply& supply) {
+  const ShelfItem& item = *supply.item;
+  if (!item.package || item.stock.liquid || supply.trims()) return false;
+  return std::ranges::all_of(s.tank.aims, [&](const Aim& aim) {
+    const Quantity* quantity = s.chemistry.type().quantity(aim.quantity);
+    if (!quantity) return true;
+    const double mol = s.chemistry.quantity_mol(*quantity, supply.brings.component_mol) * *item.package;
+    return std::abs(mol) * quantity->formula.molar_mass().v / s.target_L <= aim.high - aim.low;
   });
 }
 
@@ -75,7 +89,9 @@ std::vector<Supply> supplies_of(const Tank& tank, const Chemistry& chemistry, co
       continue;
     }
     const double salt = salt_mol_per_kg(chemistry, *brings);
-    supplies.push_back({&item, *std::move(brings), item.price_per_kg(), salt});
+    const bool base =
+        brings->component_mol[0] == 0 && role_of(chemistry.type(), sheet.now.pH, item.stock) == Role::pH_trim;
+    supplies.push_back({&item, *std::move(brings), item.price_per_kg(), salt, base});
   }
   return supplies;
 }
@@ -120,6 +136,18 @@ double cost_of(const Situation& s, const Amounts& amounts) {
   return cost;
 }
 
+/// What amounts cost where each that goes by the bag is rounded up to whole bags.
+double cost_rounded_up(const Situation& s, const Amounts& amounts) {
+  constexpr double rounding = 1.02;  // of the trims of the pH and the water, which follow
+  Amounts up = amounts;
+  for (std::size_t c = 0; c < s.supplies.size(); ++c)
+    if (s.supplies[c].by_the_bag) {
+      const double package = *s.supplies[c].item->package;
+      up.kg[c] = package * std::ceil(up.kg[c] / package - 1e-6);
+    }
+  return rounding * cost_of(s, up);
+}
+
 /// The windows alone: what is inside stays where it is, what is not comes a tenth of the window inside.
 std::vector<Aim> windows_as_aims(const Situation& s) {
   std::vector<Aim> aims = s.tank.aims;
@@ -146,6 +174,19 @@ struct Candidate {
   Plan plan;
 };
 
+std::string whole_bags(const Situation& s, const Candidate& one) {
+  std::string weighed;
+  for (std::size_t c = 0; c < s.supplies.size(); ++c) {
+    const Supply& supply = s.supplies[c];
+    if (one.amounts.kg[c] > 0 && supply.item->package && !supply.item->stock.liquid && !supply.trims() &&
+        !supply.by_the_bag)
+      weighed += (weighed.empty() ? "" : ", ") + supply.item->stock.name;
+  }
+  if (weighed.empty()) return "whole bags, none left open; the pH is trimmed by weight";
+  return "whole bags, but for the trim of the pH and " + weighed +
+         ": a bag of it is more than its window is wide";
+}
+
 std::string reason_of(const Situation& s, const Candidate& one, const Candidate& first) {
   const double dearer = one.plan.cost - first.plan.cost;
   const std::string for_money =
@@ -159,7 +200,7 @@ std::string reason_of(const Situation& s, const Candidate& one, const Candidate&
     text = "brings " + significant(first.plan.salt_load_mol - one.plan.salt_load_mol, 2) +
            " mol less of salt" + for_money;
   else if (one.wish.whole_packages)
-    text = "whole bags, none left open; the pH is trimmed by weight";
+    text = whole_bags(s, one);
   else if (&one != &first)
     text = "the smallest addition: inside every window, not to the aims";
   else
@@ -208,15 +249,21 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
       return Problem{Fault::bad_input, tank.file,
                      aim.quantity + " is not a quantity of " + chemistry.type().name, "", ""};
   std::vector<std::string> warnings;
-  Situation s{tank, chemistry, now, request, sheet.now, supplies_of(tank, chemistry, now, sheet, warnings),
-              0,    {},        {}};
+  Situation s{tank,
+              chemistry,
+              now,
+              request,
+              sheet.now,
+              supplies_of(tank, chemistry, now, sheet, warnings),
+              solid_limits(tank, chemistry, sheet.now)};
   std::erase_if(s.supplies, [&](const Supply& one) { return !serves_an_aim(tank, chemistry, one); });
   s.without_source = look_for_sources(tank, chemistry, s.supplies);
   const bool fill = tank.dosing.fill == bath::DosingHabits::Fill::to_mark;
   s.target_L = fill ? tank.working_volume.v : sheet.now.volume_L;
   s.dead_band = dead_band(s);
+  for (Supply& supply : s.supplies) supply.by_the_bag = fits_by_the_bag(s, supply);
 
-  const Wish cheapest{"least cost", tank.aims, Wish::Least::cost, false, tank.dosing.whole_packages};
+  const Wish cheapest{.kind = "least cost", .aims = tank.aims, .whole_packages = tank.dosing.whole_packages};
   auto first = amounts_of_kind(s, cheapest);
   if (!first) return first.problems();
   std::vector<Candidate> candidates{{cheapest, *first, {}}};
@@ -234,8 +281,9 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
   };
   constexpr double nearer = 1e-3;
   offer(
-      "with decant", [](Wish& wish) { wish.may_decant = true; },
+      "with decant", [&](Wish& wish) { wish.may_decant = true, wish.bring_down = request.bring_down; },
       [&](const Amounts& a) {
+        if (request.bring_down) return a.decant_L > 0;
         // Much is thrown away only to come back into a window.
         constexpr double much = 0.2;  // of the tank
         return a.decant_L > 0 && a.missing < first->missing - nearer &&
@@ -249,9 +297,9 @@ Result<AdditionSheet> plan_additions(const Tank& tank, const Chemistry& chemistr
       [&](const Amounts& a) {
         bool a_bag = false;
         for (std::size_t c = 0; c < s.supplies.size(); ++c)
-          a_bag = a_bag || (a.kg[c] > 0 && s.supplies[c].item->package && !s.supplies[c].item->stock.liquid &&
-                            !s.supplies[c].trims());
-        return a_bag && a.conflicts.empty() && a.penalty < weight::off_aim;
+          a_bag = a_bag || (a.kg[c] > 0 && s.supplies[c].by_the_bag);
+        return a_bag && a.conflicts.empty() && a.penalty < weight::off_aim &&
+               cost_of(s, a) <= cost_rounded_up(s, *first);
       });
   offer(
       "smallest addition", [&](Wish& wish) { wish.aims = windows_as_aims(s); },

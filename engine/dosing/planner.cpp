@@ -6,6 +6,7 @@
 
 #include "conflicts.hpp"
 #include "steps.hpp"
+#include "waits.hpp"
 #include "weighing.hpp"
 
 namespace bathwright::dosing {
@@ -57,8 +58,7 @@ std::vector<Column> columns_of(const Situation& s, const Wish& wish) {
                        ? per_cost * supply.price_per_kg + second * per_salt * supply.salt_mol_per_kg
                        : per_salt * supply.salt_mol_per_kg + second * per_cost * supply.price_per_kg;
     column.price += 1e-9;  // of what is free, no more than is needed
-    if (wish.whole_packages && supply.item->package && !supply.item->stock.liquid && !supply.trims())
-      column.package = *supply.item->package;
+    if (wish.whole_packages && supply.by_the_bag) column.package = *supply.item->package;
     columns.push_back(std::move(column));
   }
   // The last column: litres of bath taken out, before anything goes in.
@@ -86,14 +86,40 @@ void count_misses(const Settling& settling, const Settled& end, Amounts& amounts
   }
 }
 
-/// How much higher the brim would have to be for what does not go in.
-Result<double> lacking_room(Settling settling, const Settled& end) {
-  Goal& volume = settling.goals().back();
-  if (end.rows.back().deviation * volume.unit + volume.value < volume.high - 1e-3 * volume.unit) return 0.0;
-  volume.above = {{HUGE_VAL, weight::over_mark}};
-  const auto free = settling.settle(end.amount);
-  if (!free) return free.problems();
-  return free->rows.back().deviation * volume.unit + volume.value - volume.high;
+/// How much would have to evaporate for what does not go in, and what that is.
+Outcome lacking_room(const Situation& s, Settling settling, const Settled& end, Amounts& amounts) {
+  const Goal& volume = settling.goals().back();
+  constexpr double rounding = 1e-4;
+  const double full = volume.value + filled_freeboard * (volume.high - volume.value);
+  if (end.rows.back().deviation * volume.unit + volume.value < full - rounding * volume.unit) return Done{};
+  // Evaporated is water that goes in with a minus. It counts next to nothing, so that the same chemicals are
+  // chosen as with room enough, not those of least volume.
+  Column dry{{std::vector<double>(s.now.component_mol.size(), 0), 1}, -1e-5 * weight::decant / s.target_L};
+  constexpr double most = 0.5;  // of the tank
+  dry.lower = -most * s.target_L;
+  dry.upper = 0;
+  std::vector<Column> columns = settling.columns();
+  columns.push_back(std::move(dry));
+  std::vector<Goal> goals = settling.goals();
+  goals.back().above = {{(full - volume.value) / volume.unit, 0}, {HUGE_VAL, weight::spilled}};
+  std::vector<double> amount = end.amount;
+  amount.push_back(0);
+  const auto dried = Settling(s.chemistry, s.now, std::move(goals), std::move(columns)).settle(amount);
+  if (!dried) return dried.problems();
+  amounts.lacks_room_L = -dried->amount.back();
+  for (std::size_t c = 0; c < s.supplies.size(); ++c)
+    amounts.rest_kg.push_back(std::max(0.0, dried->amount[c] - end.amount[c]));
+  return Done{};
+}
+
+/// The solids at their limits.
+std::vector<std::string> saturated(const Settling& settling, const Settled& end) {
+  constexpr double at_it = 2e-3;  // log10
+  std::vector<std::string> names;
+  for (std::size_t g = 0; g < settling.goals().size(); ++g)
+    if (settling.goals()[g].of == Goal::Of::solid && end.rows[g].deviation > -at_it)
+      names.push_back(settling.goals()[g].dissolved);
+  return names;
 }
 
 /// Holds a column at an amount.
@@ -129,7 +155,8 @@ Result<Settled> weighed(const Situation& s, Settling& settling, Settled end) {
 /// Water fills up to the mark. Above it it would only thin what stands over its aim, and everything else
 /// would have to be bought for the litres above; it may do so where a window is missed otherwise.
 Result<Settled> without_needless_water(const Situation& s, Settling& settling, Settled best) {
-  constexpr double needless = 1e-3 * weight::outside;  // of the merit: less than a thousandth outside a window
+  constexpr double needless =
+      1e-3 * weight::outside;  // of the merit: less than a thousandth outside a window
   constexpr int most_rounds = 4;
   const Goal& volume = settling.goals().back();
   const std::vector<Column> as_it_was = settling.columns();
@@ -157,9 +184,9 @@ Result<Amounts> amounts_from(const Situation& s, const Wish& wish, std::vector<C
   // Where bath is taken out, all of it is made up for, what lies inside the noise too.
   const std::map<std::string, double> none;
   Settling settling(s.chemistry, s.now,
-                    goals_of(s.tank, s.chemistry, s.now,
+                    goals_of(s.tank, s.chemistry, s.now, s.solids,
                              {wish.aims, wish.may_decant ? none : s.dead_band, s.without_source,
-                              s.now_view.pH, s.target_L, wish.may_decant}),
+                              s.now_view.pH, s.target_L, wish.may_decant, wish.bring_down}),
                     std::move(columns));
   auto freely = settling.settle(std::vector<double>(s.supplies.size() + 1, 0));
   if (!freely) return freely.problems();
@@ -167,10 +194,11 @@ Result<Amounts> amounts_from(const Situation& s, const Wish& wish, std::vector<C
   if (!best) return best.problems();
   Amounts amounts;
   amounts.conflicts = conflicts(settling, *best, wish.may_decant);
-  if (const auto room = lacking_room(settling, *best); room) amounts.lacks_room_L = *room;
+  if (Outcome found = lacking_room(s, settling, *best, amounts); !found) amounts.lacks_room_L = 0;
   auto end = weighed(s, settling, *std::move(best));
   if (!end) return end.problems();
   count_misses(settling, *end, amounts);
+  amounts.saturated = saturated(settling, *end);
   amounts.decant_L = end->amount.back();
   amounts.kg = std::move(end->amount);
   amounts.kg.pop_back();
@@ -190,7 +218,19 @@ struct Unmet {
   }
 };
 
-Unmet unmet_aims(const Situation& s, const bath::TankView& end, double lacks_room_L) {
+/// Whether a level that ends low is nobody's fault and no addition's task.
+bool not_missed(const Situation& s, const Aim& aim, const Quantity& quantity, double level) {
+  return quantity.unwanted && level < aim.aim &&
+         (level >= aim.low || s.without_source.contains(aim.quantity));
+}
+
+bool raises(const Situation& s, const Quantity& quantity) {
+  return std::ranges::any_of(s.supplies, [&](const Supply& supply) {
+    return s.chemistry.quantity_mol(quantity, supply.brings.component_mol) > 1e-9;
+  });
+}
+
+Unmet unmet_aims(const Situation& s, const bath::TankView& end, const Amounts& amounts) {
   Unmet unmet;
   const auto& quantities = s.chemistry.type().quantities;
   for (const Aim& aim : s.tank.aims) {
@@ -205,13 +245,17 @@ Unmet unmet_aims(const Situation& s, const bath::TankView& end, double lacks_roo
       if (quantities[q].id != aim.quantity) continue;
       const double level = end.quantity_g_per_L[q];
       if (std::abs(level - aim.aim) <= left_alone + met_relative * aim.aim) continue;
+      if (not_missed(s, aim, quantities[q], level)) continue;
       unmet.add(aim, level,
                 quantities[q].label + " ends at " + significant(level, 4) + " g/L, aim " +
                     significant(aim.aim, 4) + " g/L" +
-                    (level > aim.aim      ? "; only taking bath out brings it lower"
-                     : lacks_room_L > 0.5 ? "; there is no room for more: " + significant(lacks_room_L, 2) +
-                                                " L have to evaporate first"
-                                          : ""));
+                    (level > aim.aim ? "; only taking bath out brings it lower"
+                     : amounts.lacks_room_L > 0.5
+                         ? "; there is no room for more: " + significant(amounts.lacks_room_L, 2) +
+                               " L have to evaporate first"
+                     : raises(s, quantities[q]) && !amounts.saturated.empty()
+                         ? "; held back to keep " + amounts.saturated.front()
+                         : ""));
     }
   }
   return unmet;
@@ -231,6 +275,33 @@ std::vector<std::string> left_alone(const Situation& s) {
                     ": inside the noise, left alone");
   }
   return lines;
+}
+
+/// The first step; those after it count on.
+void take_out_first(Plan& plan, const bath::TankView& taken_out) {
+  for (Step& step : plan.steps) ++step.number;
+  Step first;
+  first.number = 1;
+  first.takes_out = true;
+  first.name = "bath";
+  first.unit = "L";
+  first.amount = plan.decant_L;
+  first.kg = plan.decant_L * taken_out.density_kg_per_L;
+  first.how = "To the waste treatment, before anything is added.";
+  first.why_here = "what is taken out afterwards takes the additions with it";
+  first.predicted = taken_out;
+  plan.steps.insert(plan.steps.begin(), std::move(first));
+}
+
+std::vector<Rest> rest_of(const Situation& s, const Amounts& amounts) {
+  std::vector<Rest> rest;
+  for (std::size_t c = 0; c < amounts.rest_kg.size(); ++c) {
+    const Supply& supply = s.supplies[c];
+    const double kg = weighable_kg(supply.item->stock, amounts.rest_kg[c]);
+    if (supply.is_water() || is_nothing(s, supply, kg)) continue;
+    rest.push_back({addition_of(*supply.item, kg), amounts.lacks_room_L});
+  }
+  return rest;
 }
 
 }  // namespace
@@ -284,18 +355,23 @@ Result<Plan> plan_with(const Situation& s, const Wish& wish, const Amounts& amou
   const double decanted_share = amounts.decant_L / s.now_view.volume_L;
   for (double& mol : start.component_mol) mol *= 1 - decanted_share;
   start.water_kg *= 1 - decanted_share;
+  const auto taken_out = s.chemistry.quick_view(start);
+  if (!taken_out) return taken_out.problems();
   auto steps = make_steps(s.tank, s.chemistry, std::move(start), std::move(portioned));
   if (!steps) return steps.problems();
   plan.additions = std::move(steps->additions);
   plan.steps = std::move(steps->steps);
+  if (amounts.decant_L > 0) take_out_first(plan, *taken_out);
+  plan.rest = rest_of(s, amounts);
   plan.final_state = std::move(steps->final_state);
   plan.keep_apart = std::move(steps->keep_apart);
   auto end = s.chemistry.view(plan.final_state);
   if (!end) return end.problems();
   plan.final_view = *std::move(end);
-  Unmet unmet = unmet_aims(s, plan.final_view, amounts.lacks_room_L);
+  Unmet unmet = unmet_aims(s, plan.final_view, amounts);
   plan.unmet = std::move(unmet.words);
   plan.left_alone = left_alone(s);
+  plan.waits = waits(s.tank, s.chemistry, plan.final_view);
   plan.feasible = unmet.inside && steps->refused.empty();
   for (const Refusal& refusal : steps->refused)
     plan.unmet.push_back(refusal.reason + " (" + refusal.rule + ")");

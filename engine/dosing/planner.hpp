@@ -15,11 +15,13 @@ struct Supply {
   bath::Brings brings;  ///< per kg
   double price_per_kg;
   double salt_mol_per_kg;    ///< ions it brings
+  bool base = false;         ///< a trim of the pH that brings no OH^-: ammonia
   bool only_source = false;  ///< of something the tank aims at
+  bool by_the_bag = false;   ///< a solid of which a whole package moves no level by more than its window
 
   // The only source of something aimed at, lactic acid say, is no trim of the pH.
   [[nodiscard]] bool is_acid() const { return !only_source && brings.component_mol[0] > 0; }
-  [[nodiscard]] bool is_alkali() const { return !only_source && brings.component_mol[0] < 0; }
+  [[nodiscard]] bool is_alkali() const { return !only_source && (brings.component_mol[0] < 0 || base); }
   [[nodiscard]] bool trims() const { return is_acid() || is_alkali(); }
   [[nodiscard]] bool is_water() const { return item->stock.formula == "H2O"; }
 };
@@ -32,9 +34,11 @@ struct Situation {
   const Request& request;
   bath::TankView now_view;
   std::vector<Supply> supplies;
-  double target_L = 0;                      ///< where the tank is to stand
-  std::set<std::string> without_source;     ///< aims at what nothing on the shelf brings
-  std::map<std::string, double> dead_band;  ///< by aim that is left alone: how far off it may stay, g/L or pH
+  std::vector<SolidLimit> solids = {};
+  double target_L = 0;                        ///< where the tank is to stand
+  std::set<std::string> without_source = {};  ///< aims at what nothing on the shelf brings
+  std::map<std::string, double> dead_band =
+      {};  ///< by aim that is left alone: how far off it may stay, g/L or pH
 };
 
 /// What one kind of plan asks for.
@@ -43,16 +47,19 @@ struct Wish {
   std::vector<bath::Aim> aims;  ///< what to go for: the tank's own, or varied
   enum class Least : std::uint8_t { cost, salt } least = Least::cost;
   bool may_decant = false;
-  bool whole_packages = false;  ///< of solids; liquids are measured from the drum
+  bool bring_down = false;      ///< what is strong inside its window too
+  bool whole_packages = false;  ///< of solids, where one fits the window; liquids come from the drum
 };
 
 /// The amounts that suit a wish best.
 struct Amounts {
   std::vector<double> kg;  ///< per supply
   double decant_L = 0;
-  double penalty = 0;       ///< what missed aims and limits count, goals.hpp; volume and prices apart
-  double missing = 0;       ///< the part of it that is not merely standing above an aim, inside the window
-  double lacks_room_L = 0;  ///< that would have to evaporate first for all that should go in
+  double penalty = 0;  ///< what missed aims and limits count, goals.hpp; volume and prices apart
+  double missing = 0;  ///< the part of it that is not merely standing above an aim, inside the window
+  std::vector<std::string> saturated;  ///< solids that may go no farther: "H3BO3 dissolved at 18.0 degC"
+  std::vector<double> rest_kg;         ///< per supply: what would go in beside if there were room
+  double lacks_room_L = 0;             ///< that would have to evaporate first for all that should go in
   std::vector<std::string> conflicts;  ///< why windows cannot be met
 };
 

@@ -70,6 +70,36 @@ Result<Row> Settling::pH_row(const Goal& goal, const TankState& state) const {
   return row;
 }
 
+Outcome Settling::solid_rows(const TankState& state, std::vector<Row>& rows) const {
+  for (const bool idle : {false, true}) {
+    const auto here = [&](const Goal& goal) { return goal.of == Goal::Of::solid && goal.idle == idle; };
+    if (std::ranges::none_of(goals_, here)) continue;
+    const speciation::Solver& solver = idle ? chemistry_.idle() : chemistry_.working();
+    const speciation::Task task = bath::task_of(state);
+    const auto answer = solver.solve(task);
+    if (!answer) return answer.problems();
+    const auto sensitivity = speciation::Sensitivity::at(solver, task, *answer);
+    if (!sensitivity) return sensitivity.problems();
+    std::vector<speciation::Shift> shifts;
+    for (const Column& column : columns_) {
+      speciation::Change change;
+      change.component_mol = column.brings.component_mol;
+      change.water_kg = column.brings.water_kg;
+      shifts.push_back(sensitivity->respond(change));
+    }
+    for (std::size_t g = 0; g < goals_.size(); ++g) {
+      if (!here(goals_[g])) continue;
+      const std::size_t k = goals_[g].solid;
+      constexpr double far = -10;  // log10: an ion of it is not there
+      const bool there = std::isfinite(answer->saturation_index[k]);
+      rows[g].deviation = there ? answer->saturation_index[k] - goals_[g].value : far;
+      for (const speciation::Shift& shift : shifts)
+        rows[g].slope.push_back(there ? shift.saturation_index[k] : 0);
+    }
+  }
+  return Done{};
+}
+
 Result<Settled> Settling::at(std::vector<double> amount) const {
   Settled here;
   here.amount = std::move(amount);
@@ -84,9 +114,14 @@ Result<Settled> Settling::at(std::vector<double> amount) const {
     const double unit = 1e-4 * size_[c];
     litres[c] = (chemistry_.volume_L(Chemistry::after(state, columns_[c].brings, unit)) - volume) / unit;
   }
-  for (const Goal& goal : goals_) {
-    Row row;
+  here.rows.resize(goals_.size());
+  if (Outcome found = solid_rows(state, here.rows); !found) return found.problems();
+  for (std::size_t g = 0; g < goals_.size(); ++g) {
+    const Goal& goal = goals_[g];
+    Row& row = here.rows[g];
     switch (goal.of) {
+      case Goal::Of::solid:
+        break;
       case Goal::Of::volume:
         row.deviation = (volume - goal.value) / goal.unit;
         for (const double L : litres) row.slope.push_back(L / goal.unit);
@@ -110,7 +145,6 @@ Result<Settled> Settling::at(std::vector<double> amount) const {
       }
     }
     here.merit += penalty(goal, row.deviation);
-    here.rows.push_back(std::move(row));
   }
   for (std::size_t c = 0; c < columns_.size(); ++c) here.merit += columns_[c].price * here.amount[c];
   return here;

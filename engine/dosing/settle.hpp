@@ -48,6 +48,8 @@ class Settling {
  private:
   [[nodiscard]] Result<Settled> at(std::vector<double> amount) const;
   [[nodiscard]] Result<Row> pH_row(const Goal& goal, const bath::TankState& state) const;
+  /// Of every goal of a solid; the rows of the others stay empty.
+  [[nodiscard]] Outcome solid_rows(const bath::TankState& state, std::vector<Row>& rows) const;
   [[nodiscard]] Result<std::vector<double>> step(const Settled& from, double reach, double& promised,
                                                  bool whole) const;
   [[nodiscard]] Result<Settled> downhill(Settled best) const;

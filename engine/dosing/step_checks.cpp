@@ -16,32 +16,27 @@ using units::significant;
 
 std::string degrees(units::Celsius t) { return significant(t.v, 3) + " degC"; }
 
-/// One check per watched solid and temperature. What is beyond saturation before the plan may stay there, no
-/// step may take it farther: a treatment tank holds its hydroxides, and the aims of some baths lie beyond the
-/// table's solubility.
-void check_solids(const Chemistry& chemistry, const TankView& start, const TankView& view,
+std::string check_name(const std::string& solid, units::Celsius t) { return solid + " at " + degrees(t); }
+
+constexpr double no_worse = 0.02;  // log units, 5 % of saturation: less than any constant is known to
+
+/// One check per watched solid and temperature. What is beyond saturation but within its limit was so before,
+/// or is so at the aims.
+void check_solids(const Chemistry& chemistry, const std::vector<SolidLimit>& limits, const TankView& view,
                   std::vector<Check>& checks) {
-  for (const Headroom& room : view.headroom) {
-    if (room.slow) continue;
-    // A solid whose parts only the plan brings was not there to be looked at.
-    Headroom was;
-    was.working_log10 = was.idle_log10 = HUGE_VAL;
-    if (const auto found = std::ranges::find(start.headroom, room.solid, &Headroom::solid);
-        found != start.headroom.end())
-      was = *found;
-    const auto judge = [&](double log10_room, double log10_room_before, bool covered, units::Celsius t,
-                           bool stops) {
+  for (const SolidLimit& limit : limits) {
+    const auto room = std::ranges::find(view.headroom, limit.solid, &Headroom::solid);
+    if (room == view.headroom.end()) continue;
+    const auto judge = [&](double log10_room, double farthest, bool covered, units::Celsius t, bool stops) {
       if (!covered) return;
-      constexpr double no_worse = 0.02;  // log units, 5 % of saturation: less than any constant is known to
-      const bool ok = log10_room >= 0, farther = log10_room < log10_room_before - no_worse;
+      const bool ok = log10_room >= 0, farther = -log10_room > farthest + no_worse;
       std::string detail = significant(100 * std::pow(10, -log10_room), 3) + " % of saturation";
-      if (!ok && !farther) detail += ", as before the additions";
-      if (!ok && !room.sign_in_tank.empty()) detail += ": " + room.sign_in_tank;
-      checks.push_back({room.solid + " at " + degrees(t), ok, stops && farther, std::move(detail)});
+      if (!ok && !farther) detail += ", no more than before the additions or at the aims";
+      if (!ok && !room->sign_in_tank.empty()) detail += ": " + room->sign_in_tank;
+      checks.push_back({check_name(limit.solid, t), ok, stops && farther, std::move(detail)});
     };
-    judge(room.working_log10, was.working_log10, room.covers_working, chemistry.working_temperature(), true);
-    // What crystallises over an idle weekend is for a person to weigh: the aims may allow nothing else.
-    judge(room.idle_log10, was.idle_log10, room.covers_idle, chemistry.idle_temperature(), false);
+    judge(room->working_log10, limit.working, room->covers_working, chemistry.working_temperature(), true);
+    judge(room->idle_log10, limit.idle, room->covers_idle, chemistry.idle_temperature(), false);
   }
 }
 
@@ -85,17 +80,29 @@ void check_pH(const Tank& tank, const BathType& type, double pH_at_start, const 
   if (std::isfinite(low)) detail += ", stop below " + significant(low, 3);
   if (std::isfinite(high))
     detail += (std::isfinite(low) ? " and above " : ", stop above ") + significant(high, 3);
-  checks.push_back({"pH on the way", ok, true, std::move(detail)});
+  checks.push_back({std::string(pH_on_the_way), ok, true, std::move(detail)});
 }
 
 }  // namespace
 
-void check_tank(const Tank& tank, const Chemistry& chemistry, const TankView& start, const TankView& after,
-                std::vector<Check>& checks) {
+void check_tank(const Tank& tank, const Chemistry& chemistry, const TankView& start,
+                const std::vector<SolidLimit>& limits, const TankView& after, std::vector<Check>& checks) {
   check_volume(tank, after, checks);
   check_pH(tank, chemistry.type(), start.pH, after, checks);
   check_limits(chemistry.type(), start, after, checks);
-  check_solids(chemistry, start, after, checks);
+  check_solids(chemistry, limits, after, checks);
+}
+
+void check_idle_end(const Chemistry& chemistry, const std::vector<SolidLimit>& limits,
+                    std::vector<Check>& checks, const TankView& end) {
+  for (const SolidLimit& limit : limits) {
+    const auto room = std::ranges::find(end.headroom, limit.solid, &Headroom::solid);
+    if (room == end.headroom.end() || !room->covers_idle || -room->idle_log10 <= limit.idle + no_worse)
+      continue;
+    const auto check =
+        std::ranges::find(checks, check_name(limit.solid, chemistry.idle_temperature()), &Check::name);
+    if (check != checks.end()) check->stops = !check->ok;
+  }
 }
 
 void check_warming(const Tank& tank, double warms_C, std::vector<Check>& checks) {

@@ -5,6 +5,8 @@
 #include <bathwright/matter/water.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
+#include <map>
+#include <optional>
 
 #include "dissolving.hpp"
 #include "dosing_point.hpp"
@@ -22,6 +24,13 @@ using bath::TankState;
 using speciation::Equilibrium;
 using units::significant;
 
+/// Part of a trim of the pH that goes in before its place, so that the pH stays where it may be on the way.
+struct Early {
+  std::string trim;    ///< stock id
+  std::string before;  ///< stock id of what would take the pH too far
+  double share = 0;
+};
+
 /// One chemical on its way into the tank.
 struct Going {
   Portioned what;
@@ -30,15 +39,23 @@ struct Going {
   [[nodiscard]] bool is_water() const { return place.role == Role::water; }
 };
 
-Addition addition_of(const bath::ShelfItem& item, double kg) {
-  Addition addition;
-  addition.chemical = item.stock.id;
-  addition.name = item.stock.name;
-  addition.kg = kg;
-  addition.unit = item.stock.liquid ? "L" : "kg";
-  addition.amount = item.stock.liquid ? kg / item.stock.kg_per_L : kg;
-  addition.cost = item.price_per_kg() * kg;
-  return addition;
+void add_to(std::vector<Addition>& additions, Addition more) {
+  const auto same = std::ranges::find(additions, more.chemical, &Addition::chemical);
+  if (same == additions.end()) {
+    additions.push_back(std::move(more));
+    return;
+  }
+  same->kg += more.kg;
+  same->amount += more.amount;
+  same->cost += more.cost;
+}
+
+/// The step that the pH on the way stops; nothing where none does.
+const Step* stopped_by_pH(const Steps& steps) {
+  for (const Step& step : steps.steps)
+    for (const Check& check : step.checks)
+      if (!check.ok && check.stops && check.name == pH_on_the_way) return &step;
+  return nullptr;
 }
 
 /// Whole portions that keep each within its largest single rise, pH step and warming.
@@ -107,24 +124,33 @@ class Walk {
   Walk(const Tank& tank, const Chemistry& chemistry, TankState state)
       : tank_(tank), chemistry_(chemistry), type_(chemistry.type()), state_(std::move(state)) {}
 
-  Result<Steps> run(std::vector<Portioned> amounts, Sequence sequence) {
+  Result<Steps> run(std::vector<Portioned> amounts, Sequence sequence,
+                    const std::optional<Early>& early = {}) {
     auto now = chemistry_.speciate(state_);
     if (!now) return now.problems();
     now_ = *std::move(now);
     auto start = chemistry_.quick_view(state_);
     if (!start) return start.problems();
     start_ = *std::move(start);
+    limits_ = solid_limits(tank_, chemistry_, start_);
     gases_.emplace(chemistry_, now_, at_aims());
     held_ = bath::held_by(chemistry_, state_, now_.pH());
 
     std::vector<Going> going;
     for (const Portioned& one : amounts)
       going.push_back({one, place_of(type_, held_, now_.pH(), one.item->stock)});
+    if (early) bring_forward(going, *early);
     refuse_what_must_not_meet(going);
     if (sequence == Sequence::by_rule) std::ranges::stable_sort(going, goes_before, &Going::place);
     if (Outcome planned = plan_liquids(going); !planned) return planned.problems();
     for (std::size_t i = 0; i < going.size(); ++i)
       if (Outcome added = add(going, i); !added) return added.problems();
+    number_portions();
+    spread_over_shifts();
+    if (!result_.steps.empty()) {
+      Step& last = result_.steps.back();
+      check_idle_end(chemistry_, limits_, last.checks, last.predicted);
+    }
     result_.final_state = std::move(state_);
     return std::move(result_);
   }
@@ -136,6 +162,40 @@ class Walk {
     auto solved = chemistry_.speciate(*state);
     if (!solved) return std::nullopt;
     return *std::move(solved);
+  }
+
+  static void bring_forward(std::vector<Going>& going, const Early& early) {
+    const auto at = [&](const std::string& id) {
+      return std::ranges::find(going, id, [](const Going& one) { return one.stock().id; });
+    };
+    Going first = *at(early.trim);
+    at(early.trim)->what.kg *= 1 - early.share;
+    first.what.kg *= early.share;
+    constexpr double just_before = 1e-3;
+    first.place.key = at(early.before)->place.key - just_before;
+    first.place.why = "some of the pH trim first: " + at(early.before)->stock().name +
+                      " alone would take the pH out of its limits";
+    going.push_back(std::move(first));
+  }
+
+  /// Of a chemical that goes in at two places too.
+  void number_portions() {
+    std::map<std::string, int> of;
+    for (const Step& step : result_.steps) ++of[step.chemical];
+    std::map<std::string, int> so_far;
+    for (Step& step : result_.steps) {
+      step.portion = ++so_far[step.chemical];
+      step.portions = of[step.chemical];
+    }
+  }
+
+  void spread_over_shifts() {
+    constexpr double shift_h = 8;
+    double hours = 0;
+    for (Step& step : result_.steps) {
+      step.shift = static_cast<int>(hours / shift_h);
+      hours += step.wait_h;
+    }
   }
 
   void refuse_what_must_not_meet(std::vector<Going>& going) {
@@ -170,7 +230,7 @@ class Walk {
     Fill trial(fill_kg);
     for (const Going& one : going) {
       needs_.push_back(dissolving_need(chemistry_, state_, one.stock(), *one.what.brings,
-                                       rule_for(type_, one.stock().id), one.place.role));
+                                       type_.addition_rule(one.stock()), one.place.role));
       Step whole;
       whole.kg = one.what.kg;
       takes_kg_.push_back(trial.dissolve(needs_.back(), whole, start_.volume_L));
@@ -188,10 +248,10 @@ class Walk {
           {one.stock().id + " must not go into this tank: " + lock->why, "interlock: " + lock->rule});
       return Done{};
     }
-    result_.additions.push_back(addition_of(*one.what.item, one.what.kg));
+    add_to(result_.additions, addition_of(*one.what.item, one.what.kg));
     const double kg = one.is_water() ? fill_share_ * one.what.kg : one.what.kg;
     if (kg <= 0) return Done{};
-    const AdditionRule* rule = rule_for(type_, one.stock().id);
+    const AdditionRule* rule = type_.addition_rule(one.stock());
     TankState whole = Chemistry::after(state_, *one.what.brings, kg);
     whole.water_kg += takes_kg_[index] * water_per_kg_;
     const auto after = chemistry_.speciate(whole);
@@ -208,7 +268,7 @@ class Walk {
 
   Outcome carry(const std::vector<Going>& going, std::size_t index, double kg, int portion, int portions) {
     const Going& one = going[index];
-    const AdditionRule* rule = rule_for(type_, one.stock().id);
+    const AdditionRule* rule = type_.addition_rule(one.stock());
     Step step;
     step.number = static_cast<int>(result_.steps.size()) + 1;
     step.chemical = one.stock().id;
@@ -239,7 +299,7 @@ class Walk {
     step.predicted = *std::move(view);
     auto after = chemistry_.speciate(state_);
     if (!after) return after.problems();
-    check_tank(tank_, chemistry_, start_, step.predicted, step.checks);
+    check_tank(tank_, chemistry_, start_, limits_, step.predicted, step.checks);
     check_warming(tank_, step.warms_C, step.checks);
     gases_->check_tank(*after, held_, step.checks);
     check_dosing_point(tank_, chemistry_, before, portion_state, now_, *after, one.stock(), *gases_,
@@ -255,7 +315,9 @@ class Walk {
     for (std::size_t i = 0; i < index; ++i)
       if (!going[index].is_water() && !going[i].is_water() &&
           goes_before(going[index].place, going[i].place)) {
-        const bool ordered = rule_for(type_, going[i].stock().id) && rule_for(type_, going[index].stock().id);
+        const bool ordered = type_.addition_rule(going[i].stock()) &&
+                             type_.addition_rule(going[index].stock()) &&
+                             going[i].place.role != Role::pH_trim;  // some of it may be needed first
         step.checks.push_back({"order", false, ordered,
                                going[index].stock().name + " goes in before " + going[i].stock().name + ": " +
                                    going[index].place.why});
@@ -269,6 +331,7 @@ class Walk {
   TankState state_;
   Equilibrium now_;
   bath::TankView start_;
+  std::vector<SolidLimit> limits_;
   bath::Held held_;
   std::optional<GasRule> gases_;
   std::vector<DissolvingNeed> needs_;  ///< of each chemical, without water where the fill does not reach
@@ -280,9 +343,35 @@ class Walk {
 
 }  // namespace
 
+Addition addition_of(const bath::ShelfItem& item, double kg) {
+  Addition addition;
+  addition.chemical = item.stock.id;
+  addition.name = item.stock.name;
+  addition.kg = kg;
+  addition.unit = item.stock.liquid ? "L" : "kg";
+  addition.amount = item.stock.liquid ? kg / item.stock.kg_per_L : kg;
+  addition.cost = item.price_per_kg() * kg;
+  return addition;
+}
+
 Result<Steps> make_steps(const Tank& tank, const Chemistry& chemistry, TankState state,
                          std::vector<Portioned> amounts, Sequence sequence) {
-  return Walk(tank, chemistry, std::move(state)).run(std::move(amounts), sequence);
+  auto straight = Walk(tank, chemistry, state).run(amounts, sequence);
+  if (!straight || sequence == Sequence::as_given) return straight;
+  const Step* stopped = stopped_by_pH(*straight);
+  if (!stopped) return straight;
+  for (const Portioned& one : amounts) {
+    const matter::StockChemical& trim = one.item->stock;
+    if (trim.id == stopped->chemical ||
+        role_of(chemistry.type(), stopped->predicted.pH, trim) != Role::pH_trim)
+      continue;
+    for (const double share : {0.5, 1.0}) {
+      auto tried =
+          Walk(tank, chemistry, state).run(amounts, sequence, Early{trim.id, stopped->chemical, share});
+      if (tried && !stopped_by_pH(*tried)) return tried;
+    }
+  }
+  return straight;
 }
 
 }  // namespace bathwright::dosing

@@ -31,6 +31,9 @@ enum class Sequence : std::uint8_t {
 Result<Steps> make_steps(const bath::Tank& tank, const bath::Chemistry& chemistry, bath::TankState state,
                          std::vector<Portioned> amounts, Sequence sequence = Sequence::by_rule);
 
+/// So many kg of something on the shelf, as a line of a plan.
+[[nodiscard]] Addition addition_of(const bath::ShelfItem& item, double kg);
+
 /// What must be said before anybody opens a bag: the bath type's cautions, then each chemical's, then who
 /// decides.
 [[nodiscard]] std::vector<std::string> cautions_for(const bath::Tank& tank, const bath::BathType& type,

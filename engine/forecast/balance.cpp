@@ -250,8 +250,11 @@ class Compiler {
   void compile_feed(const Replenishment& rule) {
     const bath::ShelfItem* item = tank_.on_shelf(rule.stock);
     if (!item) {
-      problems_.push_back(
-          unknown("'" + rule.stock + "' is not on the shelf of " + tank_.name, "a shelf item"));
+      std::string shelf;
+      for (const bath::ShelfItem& one : tank_.shelf)
+        shelf += (shelf.empty() ? "one of " : ", ") + one.stock.id;
+      problems_.push_back(unknown("'" + rule.stock + "' is not on the shelf of " + tank_.name,
+                                  shelf.empty() ? "a shelf in the tank file" : shelf));
       return;
     }
     const auto lock = bath::interlock(chemistry_.type(), held_at_aims(), item->stock);
@@ -388,7 +391,7 @@ Rates rates(const bath::Tank& tank, const Compiled& c, const Policy& policy, con
   const double area = works ? policy.area_m2_per_shift.value * draw.area / hours : 0;
   r.drag_out_L = area * policy.drag_out_L_per_m2.value * draw.drag_out;
   r.drag_in_L = area * policy.drag_in_L_per_m2.value * draw.drag_in;
-  r.bleed_L = policy.bleed_L_per_day / 24;
+  r.bleed_L = policy.bleed_L_per_h(works);
   const double evaporation_L =
       works ? policy.evaporation_L_per_h.value * draw.evaporation : policy.idle_evaporation_L_per_h;
   add(r.in, c.drag_in, r.drag_in_L);

@@ -13,15 +13,20 @@ namespace bathwright::forecast {
 namespace {
 
 /// A factor of mean 1 and relative standard deviation u, lognormal.
-double factor(Normal& normal, double u) {
-  const double s2 = std::log1p(u * u), deviate = normal();
+double factor(double deviate, double u) {
+  const double s2 = std::log1p(u * u);
   return std::exp(std::sqrt(s2) * deviate - s2 / 2);
 }
 
-Draw drawn(const Prepared& p, const std::vector<Input>& inputs, std::uint64_t seed) {
+Draw drawn(const Prepared& p, const std::vector<Input>& inputs, const Eigen::MatrixXd& root,
+           std::uint64_t seed) {
   Normal normal(seed);
+  Eigen::VectorXd deviates(root.rows());
+  for (double& one : deviates) one = normal();
+  if (!p.policy.correlations.empty()) deviates = root * deviates;
   Draw draw = as_it_stands(p);
-  for (const Input& input : inputs) input.in(draw) = factor(normal, input.u_rel);
+  for (std::size_t i = 0; i < inputs.size(); ++i)
+    inputs[i].in(draw) = factor(deviates(static_cast<Eigen::Index>(i)), inputs[i].u_rel);
   return draw;
 }
 
@@ -68,6 +73,8 @@ Result<Bands> Forecast::sample(const bath::TankState& start, const Sampling& sam
   constexpr std::size_t block_size = 32;
   const std::size_t blocks = (count + block_size - 1) / block_size;
   const std::vector<Input> inputs = uncertain_inputs(*prepared_, sampling.u_level_rel);
+  const auto root = correlation_root(prepared_->policy, inputs);
+  if (!root) return root.problems();
   const int horizon = prepared_->policy.horizon_days;
   std::vector<Run> runs(count);
   std::atomic<std::size_t> next{0};
@@ -86,7 +93,7 @@ Result<Bands> Forecast::sample(const bath::TankState& start, const Sampling& sam
       const std::size_t first = b * block_size, paths = std::min(block_size, count - first);
       std::vector<Draw> draws;
       for (std::size_t i = first; i < first + paths; ++i)
-        draws.push_back(drawn(*prepared_, inputs, sampling.seed * 0x9E3779B97F4A7C15u + i));
+        draws.push_back(drawn(*prepared_, inputs, *root, sampling.seed * 0x9E3779B97F4A7C15u + i));
       Block block(*prepared_, start, draws);
       block.run(
           horizon, [&](std::size_t path, Day day) { runs[first + path].days.push_back(std::move(day)); },

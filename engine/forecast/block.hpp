@@ -35,6 +35,9 @@ class Block {
   /// Path::place of the only path.
   Outcome place(const std::vector<double>& amounts) { return paths_.front().place(amounts); }
 
+  /// Of the only path: the first day on which its equilibrium was no valid answer, and why.
+  [[nodiscard]] const std::optional<FromDay>& indicative() const { return indicative_; }
+
   [[nodiscard]] const Path& path(std::size_t at) const { return paths_[at]; }
 
  private:
@@ -42,6 +45,7 @@ class Block {
   void additions(const std::vector<const Compiled::Feed*>& due);
   void meet_pH(const Compiled::Feed& feed);
   void look(int day, const std::function<void(std::size_t path, Day day)>& see);
+  void look_closer(int day, const speciation::Equilibrium& answer);
   /// Does something with every path that has not ended; one that fails ends.
   template <class Act>
   void each(const Act& act) {
@@ -56,6 +60,7 @@ class Block {
   Equilibria working_, idle_, holding_;
   speciation::Session rating_;
   int shifts_worked_ = 0;
+  std::optional<FromDay> indicative_;
 };
 
 }  // namespace bathwright::forecast

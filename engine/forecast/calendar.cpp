@@ -17,4 +17,10 @@ std::optional<std::chrono::year_month_day> Calendar::date(int day) const {
 
 double Calendar::worked_h_per_day() const { return std::min(24.0, shifts_per_day * hours_per_shift); }
 
+double Policy::bleed_L_per_h(bool works) const {
+  if (!bleed_at_work) return bleed_L_per_day / 24;
+  const double worked_h = calendar.worked_h_per_day();
+  return works && worked_h > 0 ? bleed_L_per_day / worked_h : 0;
+}
+
 }  // namespace bathwright::forecast

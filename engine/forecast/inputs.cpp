@@ -1,15 +1,40 @@
 #include "inputs.hpp"
 
+#include <Eigen/Cholesky>
 #include <algorithm>
 
 namespace bathwright::forecast {
+
+Result<Eigen::MatrixXd> correlation_root(const Policy& policy, const std::vector<Input>& inputs) {
+  const auto n = static_cast<Eigen::Index>(inputs.size());
+  Eigen::MatrixXd all = Eigen::MatrixXd::Identity(n, n);
+  for (const Correlation& of : policy.correlations) {
+    Eigen::Index at[2];
+    for (std::size_t side = 0; side < 2; ++side) {
+      const std::string& name = side == 0 ? of.one : of.other;
+      const auto found = std::ranges::find(inputs, name, &Input::name);
+      if (found == inputs.end()) {
+        std::string names;
+        for (const Input& input : inputs) names += (names.empty() ? "one of " : "; ") + input.name;
+        return Problem{Fault::bad_input, "correlated", "'" + name + "' is not uncertain here", names, ""};
+      }
+      at[side] = found - inputs.begin();
+    }
+    all(at[0], at[1]) = all(at[1], at[0]) = of.correlation;
+  }
+  const Eigen::LLT<Eigen::MatrixXd> root(all);
+  if (root.info() != Eigen::Success)
+    return Problem{Fault::bad_input, "correlated", "correlations that contradict each other", "",
+                   "Take one out, or bring them nearer to 0."};
+  return Eigen::MatrixXd(root.matrixL());
+}
 
 Draw as_it_stands(const Prepared& p) {
   Draw draw;
   draw.work.assign(p.policy.work.size(), 1);
   for (auto* factors : {&draw.effects, &draw.efficiency, &draw.anode})
     factors->assign(p.compiled.uses.size(), 1);
-  draw.level.assign(p.chemistry.components().size(), 1);
+  draw.level.assign(p.levels.size(), 1);
   return draw;
 }
 
@@ -44,11 +69,9 @@ std::vector<Input> uncertain_inputs(const Prepared& p, double u_level_rel) {
     if (use.anode.value > 0)
       take("anode efficiency of " + id, use.anode.u_rel, [u](Draw& d) -> double& { return d.anode[u]; });
   }
-  // H^+ and what is found by charge follow from the others.
-  for (std::size_t i = 1; i < p.chemistry.components().size(); ++i)
-    if (i != p.chemistry.found_by_charge())
-      take(p.chemistry.components()[i] + " at the start", u_level_rel,
-           [i](Draw& d) -> double& { return d.level[i]; });
+  for (std::size_t l = 0; l < p.levels.size(); ++l)
+    take(p.chemistry.type().quantities[p.levels[l]].label + " at the start", u_level_rel,
+         [l](Draw& d) -> double& { return d.level[l]; });
   return all;
 }
 

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <utility>
 
 namespace bathwright::forecast {
 namespace {
@@ -31,8 +32,15 @@ bool within(const WaterSeason& season, std::chrono::month_day day) {
 Path::Path(const Prepared& p, const TankState& start, const Draw& draw) : p_(p), state_(start), draw_(draw) {
   const std::size_t n = start.component_mol.size();
   if (!draw.level.empty()) {
-    for (std::size_t i = 1; i < n; ++i)
-      if (i != p.chemistry.found_by_charge()) state_.component_mol[i] *= draw.level[i];
+    const auto& quantities = p.chemistry.type().quantities;
+    for (std::size_t l = 0; l < p.levels.size(); ++l) {
+      const double more_mol =
+          (draw.level[l] - 1) * p.chemistry.quantity_mol(quantities[p.levels[l]], start.component_mol);
+      for (std::size_t i = 0; i < n; ++i)
+        state_.component_mol[i] +=
+            p.mol_per_level_mol(static_cast<Eigen::Index>(i), static_cast<Eigen::Index>(l)) * more_mol;
+    }
+    for (std::size_t i = 1; i < n; ++i) state_.component_mol[i] = std::max(0.0, state_.component_mol[i]);
     neutralise(state_.component_mol);
   }
   const std::vector<double> none(n, 0);
@@ -210,10 +218,17 @@ Outcome Path::step(const Rates& r, double hours) {
     }
     return gap;
   };
-  const double gap = find(flows.fill, mark, hours);
+  const double gap = find(flows.fill, mark, hours * rise_);
   guess = flows.fill;
   if (gap > met_volume * mark && mark + gap > brim) find(flows.overflow, brim, -hours);
   if (!(end_.water_kg > 0)) return no_room();
+  for (std::size_t i = 1; i < end_.mol[0].size(); ++i) {
+    constexpr double rounding = 1e-9;
+    if (end_.mol[0][i] < -rounding * std::max(1.0, state_.component_mol[i]))
+      return Problem{Fault::out_of_range, p_.chemistry.components()[i],
+                     "is used up, and nothing puts enough of it back", "",
+                     "Add what replaces it to the policy."};
+  }
   book(r, flows, hours, tank_L, fill_kg_per_L, end_);
   return Done{};
 }
@@ -422,15 +437,19 @@ void Path::top_up(double litres) {
 Outcome Path::fill_up() {
   constexpr int most_rounds = 60;
   const double mark = p_.tank.working_volume.v;
+  double volume = volume_L();
   for (int round = 0; round < most_rounds; ++round) {
-    const double missing = std::max(mark - volume_L(), -filled_today_L_);
+    const double missing = std::max((mark - volume) / rise_, -filled_today_L_);
+    if (std::abs(missing) < met_volume * mark) break;
     top_up(missing);
     if (!(state_.water_kg > 0)) return no_room();
-    if (std::abs(missing) < met_volume * mark) break;
+    const double before = std::exchange(volume, volume_L());
+    constexpr double tells = 1e-6;  // below it rounding would be in the slope
+    if (std::abs(missing) > tells * mark) rise_ = std::clamp((volume - before) / missing, 0.5, 2.0);
   }
-  const double over = volume_L() - (mark + p_.tank.freeboard.v);
+  const double over = volume - (mark + p_.tank.freeboard.v);
   if (over > 0) {
-    take_share(over / volume_L(), moved_.bled);
+    take_share(over / volume, moved_.bled);
     waste_L_ += over;
   }
   return Done{};
@@ -450,6 +469,23 @@ Day Path::seen(int day) const {
   seen.top_up_L = top_up_L_;
   seen.turnovers = turnovers();
   return seen;
+}
+
+void Path::judge(Day& day) {
+  // What holds for the bath as it stands today is told as indicative; the forecast makes it no worse.
+  if (day.day == 0) began_ = day.beyond;
+  if (day.beyond == began_) day.beyond = Beyond::no;
+  constexpr double most_over = 2;  // log10
+  const auto& solids = p_.chemistry.working().system().solids();
+  for (std::size_t s = 0; s < day.working_log10.size() && s < day.idle_log10.size(); ++s)
+    if (day.beyond == Beyond::no && !solids[p_.watched[s]].slow &&
+        (day.working_log10[s] < -most_over || day.idle_log10[s] < -most_over))
+      day.beyond = Beyond::solid;
+  if (beyond_ == Beyond::no) beyond_ = day.beyond;
+  day.beyond = beyond_;
+  if (beyond_ == Beyond::no) return;
+  day.pH = bath::not_given;
+  for (auto* headroom : {&day.working_log10, &day.idle_log10}) std::ranges::fill(*headroom, bath::not_given);
 }
 
 std::vector<double> Path::amounts() const {

@@ -54,6 +54,10 @@ class Path {
   /// Of the day, all but what needs an equilibrium.
   [[nodiscard]] Day seen(int day) const;
 
+  /// Whether the model still describes this day; from the first on that it does not, pH and headroom are not
+  /// told.
+  void judge(Day& day);
+
   [[nodiscard]] const bath::TankState& state() const { return state_; }
   /// mol of a metal that all its uses have deposited.
   [[nodiscard]] double deposited_mol(const bath::Quantity& metal) const;
@@ -101,6 +105,8 @@ class Path {
   double cost_ = 0, waste_L_ = 0, drag_out_L_ = 0, top_up_L_ = 0, filled_today_L_ = 0;
   int day_ = 0;  ///< as Day counts them
   Problems ended_;
+  Beyond beyond_ = Beyond::no, began_ = Beyond::no;
+  double rise_ = 1;         ///< L of the tank per L of water that fills it up, as seen last
   double turned_over_ = 0;  ///< turnovers that feeds were given for
   speciation::Equilibrium rated_;
   std::vector<double> activity_, held_;

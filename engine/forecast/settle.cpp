@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <cmath>
+#include <functional>
 #include <numeric>
 
 #include "block.hpp"
@@ -45,18 +46,59 @@ std::vector<double> ahead(const std::vector<double>& a, const std::vector<double
   return end;
 }
 
-}  // namespace
+using Levels = std::optional<std::vector<double>>;
 
-Result<std::optional<std::vector<double>>> Forecast::steady_state(const bath::TankState& start) const {
-  using Levels = std::optional<std::vector<double>>;
-  Policy always = prepared_->policy;  // without what does not come again and again
-  always.calendar.closed.clear();
-  always.seasons.clear();
-  std::erase_if(always.decants, [](const Decant& decant) { return decant.on_day > 0; });
-  const auto repeated = prepare(prepared_->tank, prepared_->chemistry, always);
-  if (!repeated) return repeated.problems();
-  const Prepared& p = *repeated->prepared_;
-  Block block(p, start, {Draw{}});
+/// Litres that drag-out, bleed and freezing out took by now: what sets how fast a tank settles.
+double lost_L(const Prepared& p, const Day& day) {
+  double litres = day.drag_out_L + day.waste_L;
+  for (const FreezeOut& freeze : p.policy.freeze_outs)
+    litres += static_cast<double>(day.day / freeze.every_days) * freeze.litres;
+  return litres;
+}
+
+/// A policy that goes on for ever, without what does not come again and again; its bleed and its load can be
+/// changed.
+class Endless {
+ public:
+  static Result<Endless> of(const Prepared& p, const bath::TankState& start) {
+    Policy policy = p.policy;
+    policy.calendar.closed.clear();
+    policy.seasons.clear();
+    std::erase_if(policy.decants, [](const Decant& decant) { return decant.on_day > 0; });
+    auto prepared = prepare(p.tank, p.chemistry, policy);
+    if (!prepared) return prepared.problems();
+    return Endless(*std::move(prepared), start);
+  }
+
+  void bleed_more(double L_per_day) { p_->policy.bleed_L_per_day = stated_.bleed_L_per_day + L_per_day; }
+  void load(double times) {
+    for (std::size_t w = 0; w < stated_.work.size(); ++w)
+      p_->policy.work[w].per_shift.value = times * stated_.work[w].per_shift.value;
+    p_->policy.area_m2_per_shift.value = times * stated_.area_m2_per_shift.value;
+  }
+
+  /// As Forecast::steady_state.
+  [[nodiscard]] Result<Levels> levels() const;
+
+  /// Where one quantity settles, g/L; unbounded where it does not, or where so little leaves that the salts
+  /// crowd out the water.
+  [[nodiscard]] double level(std::size_t quantity) const {
+    const auto all = levels();
+    return all && *all ? (**all)[quantity] : HUGE_VAL;
+  }
+
+ private:
+  Endless(std::shared_ptr<Prepared> p, const bath::TankState& start)
+      : p_(std::move(p)), stated_(p_->policy), start_(start) {}
+
+  std::shared_ptr<Prepared> p_;
+  Policy stated_;
+  bath::TankState start_;
+};
+
+Result<Levels> Endless::levels() const {
+  const Prepared& p = *p_;
+  Block block(p, start_, {Draw{}});
   const int round = round_of(p.policy);
   int day = 0;
   const auto pass = [&](int days) -> Outcome {
@@ -69,11 +111,10 @@ Result<std::optional<std::vector<double>>> Forecast::steady_state(const bath::Ta
   constexpr int first_rounds = 3;  // what is brought to its aim is there, what runs over does so
   for (int r = 0; r < first_rounds; ++r)
     if (Outcome passed = pass_round(); !passed) return passed.problems();
-  const Day before = block.path(0).seen(0);
+  const Day before = block.path(0).seen(day);
   if (Outcome passed = pass_round(); !passed) return passed.problems();
-  const Day after = block.path(0).seen(0);
-  const double lost =
-      (after.drag_out_L + after.waste_L - before.drag_out_L - before.waste_L) / p.tank.working_volume.v;
+  const Day after = block.path(0).seen(day);
+  const double lost = (lost_L(p, after) - lost_L(p, before)) / p.tank.working_volume.v;
   constexpr double longest_days = 200'000, time_constants = 25;
   if (!(lost / round * longest_days > time_constants)) return Levels{};
 
@@ -108,19 +149,6 @@ Result<std::optional<std::vector<double>>> Forecast::steady_state(const bath::Ta
   return Levels(std::move(levels));
 }
 
-namespace {
-
-/// Where a quantity settles under another policy, g/L; unbounded where it does not, or where so little leaves
-/// that the salts crowd out the water.
-Result<double> settles_at(const Prepared& p, const bath::TankState& start, const Policy& policy,
-                          std::size_t quantity) {
-  const auto other = Forecast::prepare(p.tank, p.chemistry, policy);
-  if (!other) return other.problems();
-  const auto levels = other->steady_state(start);
-  if (!levels || !*levels) return HUGE_VAL;
-  return (**levels)[quantity];
-}
-
 Result<std::size_t> position(const Prepared& p, const std::string& quantity) {
   const auto& all = p.chemistry.type().quantities;
   const auto at = std::ranges::find(all, quantity, &bath::Quantity::id);
@@ -129,39 +157,74 @@ Result<std::size_t> position(const Prepared& p, const std::string& quantity) {
   return static_cast<std::size_t>(at - all.begin());
 }
 
+struct Point {
+  double x, spare;
+};
+
+/// Where a rising function is 0 between a point below it and one not below: false position; an end that stays
+/// twice is halved (Illinois). `met` is near enough to 0; nothing where the function jumps over it.
+std::optional<double> crossing(const std::function<double(double)>& spare, Point below, Point above,
+                               double met) {
+  constexpr int most_runs = 60;
+  int stayed = 0;  // above 0: the upper end, times in a row
+  for (int run = 0; run < most_runs; ++run) {
+    const double x = (below.x * above.spare - above.x * below.spare) / (above.spare - below.spare);
+    const double now = spare(x);
+    if (std::abs(now) < met) return x;
+    if (now < 0) {
+      below = {x, now};
+      stayed = std::max(stayed, 0) + 1;
+      if (stayed > 1) above.spare /= 2;
+    } else {
+      above = {x, now};
+      stayed = std::min(stayed, 0) - 1;
+      if (stayed < -1) below.spare /= 2;
+    }
+  }
+  return std::nullopt;
+}
+
+constexpr double step_times = 4;  // from one point tried to the next
+constexpr double near_enough = 1e-6;
+
 }  // namespace
+
+Result<Levels> Forecast::steady_state(const bath::TankState& start) const {
+  const auto endless = Endless::of(*prepared_, start);
+  if (!endless) return endless.problems();
+  return endless->levels();
+}
+
+// What settles is near p load/(D load + B): its inverse is nearly a straight line in the bleed B and in
+// 1/load, and rises with both.
 
 Result<std::optional<double>> Forecast::bleed_to_hold(const bath::TankState& start,
                                                       const std::string& quantity, double g_per_L) const {
   const Prepared& p = *prepared_;
   const auto which = position(p, quantity);
   if (!which) return which.problems();
-  const auto at_bleed = [&](double extra) {
-    Policy policy = p.policy;
-    policy.bleed_L_per_day += extra;
-    return settles_at(p, start, policy, *which);
+  auto endless = Endless::of(p, start);
+  if (!endless) return endless.problems();
+  Endless tried = *std::move(endless);
+  const auto spare = [&](double bleed) {
+    tried.bleed_more(bleed);
+    return std::min(1 / tried.level(*which), 1e3 / g_per_L) - 1 / g_per_L;
   };
-  const auto without = at_bleed(0);
-  if (!without) return without.problems();
-  if (*without <= g_per_L) return std::optional<double>{};
-  // What settles is near p/(D + B): its inverse is nearly a straight line in the bleed B, and secants on it
-  // are there in a few runs.
-  double low = 0, low_inverse = 1 / *without;
-  double high = 0.01 * p.tank.working_volume.v;
-  const double wanted = 1 / g_per_L;
-  constexpr int most_runs = 30;
-  for (int run = 0; run < most_runs; ++run) {
-    const auto level = at_bleed(high);
-    if (!level) return level.problems();
-    const double high_inverse = 1 / *level;
-    if (std::abs(high_inverse - wanted) < 1e-6 * wanted) return std::optional(high);
-    const double slope = (high_inverse - low_inverse) / (high - low);
-    const double next = slope > 0 ? std::max(high + (wanted - high_inverse) / slope, high / 4) : 2 * high;
-    low = high, low_inverse = high_inverse;
-    high = std::min(next, 16 * high);
+  Point below{0, spare(0)};
+  if (below.spare >= 0) return std::optional<double>{};
+  const double tank_L = p.tank.working_volume.v;
+  constexpr double first_share = 0.01, most_tanks = 100;
+  Point above{first_share * tank_L, 0};
+  for (; (above.spare = spare(above.x)) < 0; above.x *= step_times) {
+    if (above.x > most_tanks * tank_L)
+      return Problem{Fault::not_converged, quantity, "no bleed holds it", "",
+                     "Something that grows with the bleed brings it: look at what fills the tank up."};
+    below = above;
   }
-  return Problem{Fault::not_converged, quantity, "no bleed was found that holds it", "",
-                 "Check the policy: something else may hold or drive this level."};
+  const auto bleed = crossing(spare, below, above, near_enough / g_per_L);
+  if (bleed) return bleed;
+  return Problem{Fault::not_converged, quantity, "the level jumps over it as the bleed grows", "",
+                 "Something is added or taken only beyond a level: look at the policy's rules."};
 }
 
 Result<std::optional<double>> Forecast::largest_load(const bath::TankState& start,
@@ -169,55 +232,31 @@ Result<std::optional<double>> Forecast::largest_load(const bath::TankState& star
   const Prepared& p = *prepared_;
   const auto which = position(p, quantity);
   if (!which) return which.problems();
-  const auto at_load = [&](double times) {
-    Policy policy = p.policy;
-    for (Work& work : policy.work) work.per_shift.value *= times;
-    policy.area_m2_per_shift.value *= times;
-    return settles_at(p, start, policy, *which);
+  auto endless = Endless::of(p, start);
+  if (!endless) return endless.problems();
+  Endless tried = *std::move(endless);
+  const auto spare = [&](double inverse_load) {
+    tried.load(1 / inverse_load);
+    return std::min(1 / tried.level(*which), 1e3 / g_per_L) - 1 / g_per_L;
   };
-  // How far the inverse level is above that wanted falls as the load rises: p/(D load + B) again.
-  const auto spare = [&](double times) -> Result<double> {
-    const auto level = at_load(times);
-    if (!level) return level.problems();
-    return 1 / *level - 1 / g_per_L;
-  };
-  constexpr double least_load = 1e-3, most_load = 1e3;
-  double low = 1, high = 1;
-  auto at_low = spare(low);
-  if (!at_low) return at_low.problems();
-  double low_spare = *at_low, high_spare = low_spare;
-  while (low_spare < 0 && low > least_load) {
-    high = low, high_spare = low_spare;
-    low /= 4;
-    const auto next = spare(low);
-    if (!next) return next.problems();
-    low_spare = *next;
+  constexpr double most = 1e3;
+  Point below{1, spare(1)}, above = below;
+  while (below.spare >= 0) {
+    if (below.x < 1 / most) return std::optional<double>{};
+    above = below;
+    below.x /= step_times;
+    below.spare = spare(below.x);
   }
-  if (low_spare < 0) return std::optional(0.0);
-  while (high_spare >= 0 && high < most_load) {
-    low = high, low_spare = high_spare;
-    high *= 4;
-    const auto next = spare(high);
-    if (!next) return next.problems();
-    high_spare = *next;
+  while (above.spare < 0) {
+    if (above.x > most) return std::optional(0.0);
+    below = above;
+    above.x *= step_times;
+    above.spare = spare(above.x);
   }
-  if (high_spare >= 0) return std::optional<double>{};
-  // False position on the inverse of the load, in which the inverse level is nearly a straight line; the end
-  // that stays is halved (Illinois).
-  constexpr int most_runs = 40;
-  double a = 1 / low, fa = low_spare, b = 1 / high, fb = high_spare;
-  for (int run = 0; run < most_runs; ++run) {
-    const double x = (a * fb - b * fa) / (fb - fa);
-    const auto f = spare(1 / x);
-    if (!f) return f.problems();
-    if (std::abs(*f) * g_per_L < 1e-6) return std::optional(1 / x);
-    if ((*f < 0) == (fb < 0))
-      b = x, fb = *f, fa /= 2;
-    else
-      a = x, fa = *f, fb /= 2;
-  }
-  return Problem{Fault::not_converged, quantity, "no load was found that the bleed can carry", "",
-                 "Check the policy: something else may hold or drive this level."};
+  if (const auto inverse = crossing(spare, below, above, near_enough / g_per_L))
+    return std::optional(1 / *inverse);
+  return Problem{Fault::not_converged, quantity, "the level jumps over it as the load grows", "",
+                 "Something is added or taken only beyond a level: look at the policy's rules."};
 }
 
 }  // namespace bathwright::forecast

@@ -1,5 +1,6 @@
 #include "bathwright/hand_over/hand_over.hpp"
 
+#include <bathwright/logbook/approval.hpp>
 #include <chrono>
 #include <map>
 #include <nlohmann/json.hpp>
@@ -84,9 +85,15 @@ Result<HandOver> hand_over(const logbook::Logbook& log, const shifts::Calendar& 
   auto entries = log.list(filter);
   if (!entries) return entries.problems();
   told.entries = *std::move(entries);
-  auto open = log.open_slips();
+  const auto open = log.open_slips();
   if (!open) return open.problems();
-  told.open_slips = *std::move(open);
+  for (const logbook::Entry& slip : *open) {
+    const auto approved = logbook::approved_by(log, slip);
+    if (!approved) return approved.problems();
+    const auto must = logbook::asks_approval(log, slip.tank);
+    if (!must) return must.problems();
+    told.open_slips.push_back({slip, *approved, *must});
+  }
   auto head = log.head();
   if (!head) return head.problems();
   told.head = *std::move(head);

@@ -31,7 +31,8 @@ class Rates {
   Vec advance(Vec& x, const Leg& leg) const {
     const double drag_out = drag_out_L(leg);
     const double drag_in = leg.area_m2 * c_.policy->drag_in_L_per_m2.value * f_.drag_in;
-    const double bleed = c_.policy->bleed_L_per_day / 24 * leg.hours;
+    const double bleed = c_.policy->bleed_L_per_h(true) * leg.worked_h +
+                         c_.policy->bleed_L_per_h(false) * (leg.hours - leg.worked_h);
     const double evaporation =
         c_.policy->evaporation_L_per_h.value * f_.evaporation * changed(What::evaporation, 0, leg) *
             leg.worked_h +

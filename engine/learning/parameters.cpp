@@ -1,5 +1,7 @@
 #include "parameters.hpp"
 
+#include <algorithm>
+#include <array>
 #include <cmath>
 #include <ranges>
 
@@ -31,6 +33,25 @@ const char* unit_of(CountedIn counted_in) {
   }
   return "";
 }
+
+/// Its name, and where its factor stands: one for the tank, or one for each use.
+struct Kind {
+  What what;
+  std::string_view name;
+  double Factors::*of_tank;
+  std::vector<double> Factors::*of_use;
+};
+constexpr std::array kinds = {
+    Kind{What::drag_out, "drag-out", &Factors::drag_out, nullptr},
+    Kind{What::drag_in, "drag-in", &Factors::drag_in, nullptr},
+    Kind{What::evaporation, "evaporation", &Factors::evaporation, nullptr},
+    Kind{What::idle_evaporation, "idle evaporation", &Factors::idle_evaporation, nullptr},
+    Kind{What::water, "water", &Factors::water, nullptr},
+    Kind{What::work, "work", nullptr, &Factors::work},
+    Kind{What::efficiency, "efficiency", nullptr, &Factors::efficiency},
+    Kind{What::effects, "effects", nullptr, &Factors::effects}};
+
+const Kind& kind_of(What what) { return *std::ranges::find(kinds, what, &Kind::what); }
 
 class Priors {
  public:
@@ -89,8 +110,9 @@ class Priors {
       add(What::work, u, use.per_shift, "work: " + stated.id,
           std::string(unit_of(stated.counted_in)) + " a shift", at);
     }
-    if (const double share = stated.cathode_efficiency; use.plates && by_current && share < 1) {
-      const double u = stated_or(stated.u_cathode_efficiency, assumed_.efficiency);
+    // The shop's own figure where its policy has one.
+    if (const double share = use.compiled->cathode.value; use.plates && by_current && share < 1) {
+      const double u = stated_or(share * use.compiled->cathode.u_rel, assumed_.efficiency);
       out_.push_back({What::efficiency, at, u / (share * (1 - share)), 100 * share, true,
                       "efficiency of " + stated.id, "%", std::nullopt});
     }
@@ -100,7 +122,7 @@ class Priors {
       use.effects.cwiseAbs().maxCoeff(&first);
       for (const auto& effect : std::views::reverse(stated.effects))
         first = course_.position(effect.quantity).value_or(first);
-      add(What::effects, stated_or(stated.effects_u_rel, assumed_.effects), use.effects(first),
+      add(What::effects, stated_or(use.compiled->effects_u_rel, assumed_.effects), use.effects(first),
           course_.followed[static_cast<std::size_t>(first)]->label + " by " + stated.id,
           std::string("g/") + unit_of(stated.counted_in), at);
     }
@@ -114,27 +136,7 @@ class Priors {
 
 }  // namespace
 
-std::string_view name(What what) {
-  switch (what) {
-    case What::drag_out:
-      return "drag-out";
-    case What::drag_in:
-      return "drag-in";
-    case What::evaporation:
-      return "evaporation";
-    case What::idle_evaporation:
-      return "idle evaporation";
-    case What::water:
-      return "water";
-    case What::work:
-      return "work";
-    case What::efficiency:
-      return "efficiency";
-    case What::effects:
-      return "effects";
-  }
-  return "";
-}
+std::string_view name(What what) { return kind_of(what).name; }
 
 double Prior::figure(double z) const {
   return is_fraction ? 100 * share_of(logit(stated / 100) + z) : stated * std::exp(z);
@@ -153,37 +155,13 @@ Factors factors_of(const Course& course, const std::vector<Prior>& priors, const
   f.efficiency.assign(course.uses.size(), 1);
   for (std::size_t j = 0; j < priors.size(); ++j) {
     const Prior& prior = priors[j];
-    const double at = z(static_cast<Eigen::Index>(j)), factor = std::exp(at);
+    const double at = z(static_cast<Eigen::Index>(j));
     if (prior.until_h) {
-      f.changes.push_back({prior.what, prior.use, *prior.until_h, factor});
+      f.changes.push_back({prior.what, prior.use, *prior.until_h, std::exp(at)});
       continue;
     }
-    switch (prior.what) {
-      case What::drag_out:
-        f.drag_out = factor;
-        break;
-      case What::drag_in:
-        f.drag_in = factor;
-        break;
-      case What::evaporation:
-        f.evaporation = factor;
-        break;
-      case What::idle_evaporation:
-        f.idle_evaporation = factor;
-        break;
-      case What::water:
-        f.water = factor;
-        break;
-      case What::work:
-        f.work[prior.use] = factor;
-        break;
-      case What::effects:
-        f.effects[prior.use] = factor;
-        break;
-      case What::efficiency:
-        f.efficiency[prior.use] = std::exp(prior.ln_factor(at));
-        break;
-    }
+    const Kind& kind = kind_of(prior.what);
+    (kind.of_tank ? f.*kind.of_tank : (f.*kind.of_use)[prior.use]) = std::exp(prior.ln_factor(at));
   }
   return f;
 }

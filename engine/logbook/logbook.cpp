@@ -6,6 +6,7 @@
 
 #include <utility>
 
+#include "bathwright/logbook/approval.hpp"
 #include "chain.hpp"
 #include "entry_rules.hpp"
 #include "logbook_state.hpp"
@@ -38,6 +39,24 @@ Outcome check_answered(const NewEntry& entry, const std::optional<Entry>& answer
     if (slip.seq == answered->seq) return Done{};
   return problem(fmt::format("slip {} is closed", answered->seq), "an open slip",
                  "log what was added beside it without naming the slip");
+}
+
+/// An addition waits for its slip's approval where the tank asks for one.
+Outcome check_approval(const Logbook& log, const Roll& roll, const NewEntry& entry) {
+  if (entry.kind != EntryKind::addition || !entry.about ||
+      !roll.asks_second(entry.tank, EntryKind::slip_approved))
+    return Done{};
+  const auto slip = log.find(*entry.about);
+  if (!slip) return slip.problems();
+  const auto approved = approved_by(log, *slip);
+  if (!approved) return approved.problems();
+  if (!approved->empty()) return Done{};
+  return Problem{Fault::refused, "addition",
+                 fmt::format("slip {} is not approved, and tank {} asks for a second person's approval",
+                             *entry.about, entry.tank),
+                 "an approved slip",
+                 "let somebody else read the slip and approve it, then add; what is in the tank already is "
+                 "logged without naming the slip"};
 }
 
 }  // namespace
@@ -140,6 +159,7 @@ Result<std::vector<Entry>> Logbook::append_all(const std::vector<NewEntry>& give
   std::vector<Entry> logged;
   for (const NewEntry& entry : entries) {
     if (auto fits = state_->check_slips(entry); !fits) return fits.problems();
+    if (auto approved = check_approval(*this, roll, entry); !approved) return approved.problems();
     Entry next = state_->entry_of(entry, before);
     if (auto done = State::sign(next, *keys, roll); !done) return done.problems();
     next.hash = chain_hash(next);

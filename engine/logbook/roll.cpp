@@ -176,7 +176,8 @@ std::optional<Problem> Roll::refusal(const Entry& entry) const {
   if (entry.kind == EntryKind::slip && by->role != Role::chemist &&
       !(witness && witness->role == Role::chemist))
     return refuse(entry, "no chemist approved it", "a chemist's signature, first or second");
-  if (!witness && asks_second(entry.tank, entry.kind))
+  // An approval is the second person's signature itself; what this rule asks for is that there is one.
+  if (!witness && entry.kind != EntryKind::slip_approved && asks_second(entry.tank, entry.kind))
     return refuse(entry, fmt::format("tank {} asks for a second signature on this", entry.tank),
                   "two persons' signatures", "let a second person sign as witness");
   if (entry.kind == EntryKind::person && by->role != Role::chemist) {

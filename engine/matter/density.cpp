@@ -84,6 +84,7 @@ Result<SolutionDensity> SolutionDensity::for_species(std::span<const std::string
     const Formula& one = species[i];
     density.kg_per_mol_.push_back(one.molar_mass().v / 1000);
     density.charge_magnitude_.push_back(std::abs(one.charge()));
+    density.is_anion_.push_back(one.charge() < 0);
     if (one.charge() == 0) add(one, static_cast<int>(i), -1, one.molar_mass().v / 1000);
     if (one.charge() <= 0) continue;
     for (std::size_t j = 0; j < species.size(); ++j) {
@@ -103,6 +104,21 @@ double SolutionDensity::half_of_equivalents(std::span<const double> mol) const {
   return sum / 2;
 }
 
+/// Sum of solute_kg, ion by ion: a cation's equivalents go to all anions, and the other way round.
+double SolutionDensity::mass_of_solutes_kg(std::span<const double> mol, double half) const {
+  double neutral_kg = 0, kg[2] = {0, 0}, equivalents[2] = {0, 0};
+  for (std::size_t i = 0; i < mol.size(); ++i) {
+    const double of_it = mol[i] * kg_per_mol_[i];
+    if (charge_magnitude_[i] == 0) {
+      neutral_kg += of_it;
+      continue;
+    }
+    kg[is_anion_[i]] += of_it;
+    equivalents[is_anion_[i]] += charge_magnitude_[i] * mol[i];
+  }
+  return neutral_kg + (half > 0 ? (kg[0] * equivalents[1] + kg[1] * equivalents[0]) / half : 0);
+}
+
 double SolutionDensity::solute_kg(const Solute& solute, std::span<const double> mol, double half) const {
   const auto first = static_cast<std::size_t>(solute.first);
   if (solute.anion < 0) return mol[first] * solute.kg_per_unit;
@@ -114,18 +130,18 @@ double SolutionDensity::solute_kg(const Solute& solute, std::span<const double> 
 
 double SolutionDensity::volume_L(std::span<const double> mol, double water_kg, units::Celsius t) const {
   assert(mol.size() == kg_per_mol_.size());
-  const double half = half_of_equivalents(mol);
-  double solutes_kg = 0, formed_water_kg = 0;
-  for (const Solute& solute : solutes_) {
-    (solute.volume == Solute::Volume::water ? formed_water_kg : solutes_kg) += solute_kg(solute, mol, half);
-  }
+  const double half = half_of_equivalents(mol), paired_kg = mass_of_solutes_kg(mol, half);
+  double formed_water_kg = 0;
+  for (const Solute& solute : solutes_)
+    if (solute.volume == Solute::Volume::water) formed_water_kg += solute_kg(solute, mol, half);
   const double all_water_kg = water_kg + formed_water_kg;
-  const double solute_fraction = solutes_kg / (all_water_kg + solutes_kg);
+  const double solute_fraction = (paired_kg - formed_water_kg) / (water_kg + paired_kg);
 
   double litres = all_water_kg / water_density(t).v;
   for (const Solute& solute : solutes_) {
     if (solute.volume == Solute::Volume::water) continue;
     const double kg = solute_kg(solute, mol, half);
+    if (kg == 0) continue;
     litres += kg * (solute.volume == Solute::Volume::fitted ? solute.fit.apparent_L_per_kg(solute_fraction, t)
                                                             : solute.litres_per_kg);
   }

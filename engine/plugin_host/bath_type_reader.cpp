@@ -207,6 +207,7 @@ class Reader {
       quantity.counts = terms({"quantities", n, "counts"}, row.counts, row.count);
       if (quantity.counts.empty()) report_.add({"quantities", n, "counts"}, "counts nothing", "a component");
       quantity.salt_view = (row.flags & BW_SALT_VIEW) != 0;
+      quantity.unwanted = row.role == BW_BYPRODUCT || row.role == BW_CONTAMINANT;
       out_.quantities.push_back(std::move(quantity));
     }
   }

@@ -1,6 +1,7 @@
 #include <algorithm>
 #include <array>
 #include <bathwright/base/nearest.hpp>
+#include <bathwright/bath/quantity_meant.hpp>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/shopfiles/policy_file.hpp>
 #include <bathwright/units/read.hpp>
@@ -28,10 +29,16 @@ class Reader {
     read_film();
     read_evaporation();
     read_water();
-    if (auto bleed = root_.table({"bleed", optional, R"({ rate = "20 L/d" })"}))
+    if (auto bleed = root_.table({"bleed", optional, R"({ rate = "20 L/d" })"})) {
       policy_.bleed_L_per_day =
           24 * litres_per(*bleed, {"rate", required, R"("20 L/d")"}, units::read_duration).value_or(0);
+      policy_.bleed_at_work = bleed->truth({"at_work", optional, "true"});
+    }
     for (Table& rule : root_.tables({"replenish", optional, ""})) read_replenishment(rule);
+    for (Table& pair : root_.tables({"correlated", optional, ""}))
+      policy_.correlations.push_back({pair.text({"one", required, R"("drag-out")"}),
+                                      pair.text({"other", required, R"("work, deposition")"}),
+                                      pair.number({"correlation", required, "-0.93"}, {-1, 1}).value_or(0)});
     for (Table& decant : root_.tables({"decant", optional, ""})) read_decant(decant);
     for (Table& freeze : root_.tables({"freeze_out", optional, ""})) read_freeze_out(freeze);
     read_carbon_dioxide();
@@ -333,9 +340,7 @@ class Reader {
   const bath::Quantity* quantity_of(Table& table, const std::string& id) {
     const bath::Quantity* quantity = type_.quantity(id);
     if (quantity) return quantity;
-    std::vector<std::string> known;
-    for (const auto& q : type_.quantities) known.push_back(q.id);
-    const auto meant = nearest(id, known);
+    const auto meant = bath::quantity_meant(type_, id);
     table.report(id, "is no quantity of " + type_.name, "", meant ? "Did you mean " + *meant + '?' : "");
     return nullptr;
   }
@@ -424,9 +429,7 @@ class Reader {
     }
     const bath::Quantity* quantity = type_.quantity(r.quantity);
     if (!quantity) {
-      std::vector<std::string> known = {"pH"};
-      for (const auto& q : type_.quantities) known.push_back(q.id);
-      const auto meant = nearest(r.quantity, known);
+      const auto meant = bath::quantity_meant(type_, r.quantity);
       rule.report("to_aim", '"' + toml_schema::printable(r.quantity) + "\" is no quantity of " + type_.name,
                   "", meant ? "Did you mean " + *meant + '?' : "");
     }

@@ -16,10 +16,9 @@ constexpr double lowest_ln_molality = -700;
 /// Whether the Gibbs energy curves upward in every direction at the answer: 1 + sqrt(M) H sqrt(M) positive
 /// definite over the kinds of solute that are not traces. Where it does not, the model has left its range and
 /// may have other solutions.
+/// `w.derivative` is that of the coefficients there.
 bool curves_upward(Workspace& w, const SpeciesVector& in_kind) {
   const std::size_t kinds = w.kinds();
-  SpeciesVector ln_gamma(static_cast<Index>(kinds));
-  w.model().evaluate_kinds({in_kind.data(), kinds}, {ln_gamma.data(), kinds}, w.derivative);
   SpeciesVector charge = SpeciesVector::Zero(static_cast<Index>(kinds));
   for (Index j = 0; j < w.count(); ++j) charge(w.kind[static_cast<std::size_t>(j)]) = w.charge(j);
   std::array<std::size_t, activity::max_solutes> abundant;
@@ -64,7 +63,10 @@ void read_answer(Workspace& w, const Solver& solver, const Constants& ln_K, cons
   w.sum_kinds(m, in_kind);
   for (std::size_t j = 0; j < w.species.size(); ++j) answer.molality[w.species[j]] = m(static_cast<Index>(j));
   // One last look at the coefficients, so that what is printed belongs together to the last digit.
-  answer.ln_water_activity = solver.model().evaluate(answer.molality, answer.ln_gamma);
+  SpeciesVector ln_gamma(static_cast<Index>(w.kinds()));
+  answer.ln_water_activity =
+      w.model().evaluate_kinds({in_kind.data(), w.kinds()}, {ln_gamma.data(), w.kinds()}, w.derivative);
+  for (std::size_t j = 0; j < count; ++j) answer.ln_gamma[j] = ln_gamma(w.model().kind_of()[j]);
   for (std::size_t j = 0; j < w.species.size(); ++j)
     answer.ln_activity[w.species[j]] = w.ln_m(static_cast<Index>(j)) + answer.ln_gamma[w.species[j]];
   answer.water_kg = w.water_kg;

@@ -57,21 +57,20 @@ LaneProblem::LaneProblem(const Workspace& w)
       phase_mol(w.phases.size()),
       active(w.phases.size()) {}
 
-void LaneProblem::set_lane(std::size_t lane, const Workspace& w) {
-  for (std::size_t i = 0; i < total.size(); ++i) {
-    total[i][lane] = w.total(static_cast<Index>(i));
-    x[i][lane] = w.x(static_cast<Index>(i));
-  }
-  for (std::size_t j = 0; j < ln_K.size(); ++j) {
-    ln_K[j][lane] = w.ln_K(static_cast<Index>(j));
-    ln_m[j][lane] = w.ln_m(static_cast<Index>(j));
-  }
-  for (std::size_t k = 0; k < phase_ln_K.size(); ++k) {
-    phase_ln_K[k][lane] = w.phases[k].ln_K;
+void LaneProblem::set_amounts(std::size_t lane, const Workspace& w) {
+  for (std::size_t i = 0; i < total.size(); ++i) total[i][lane] = w.total(static_cast<Index>(i));
+  for (std::size_t j = 0; j < ln_K.size(); ++j) ln_K[j][lane] = w.ln_K(static_cast<Index>(j));
+  for (std::size_t k = 0; k < phase_ln_K.size(); ++k) phase_ln_K[k][lane] = w.phases[k].ln_K;
+  total_water[lane] = w.total_water;
+}
+
+void LaneProblem::set_start(std::size_t lane, const Workspace& w) {
+  for (std::size_t i = 0; i < x.size(); ++i) x[i][lane] = w.x(static_cast<Index>(i));
+  for (std::size_t j = 0; j < ln_m.size(); ++j) ln_m[j][lane] = w.ln_m(static_cast<Index>(j));
+  for (std::size_t k = 0; k < phase_mol.size(); ++k) {
     phase_mol[k][lane] = w.phases[k].mol;
     active[k][lane] = w.phases[k].active ? 1 : 0;
   }
-  total_water[lane] = w.total_water;
   ln_aw[lane] = w.ln_aw;
   water_kg[lane] = w.water_kg;
 }

@@ -17,8 +17,10 @@ struct LaneProblem {
   Lanes ln_aw, water_kg;
 
   explicit LaneProblem(const Workspace& w);
-  /// Amounts and constants of the workspace as those of one lane; the state of the workspace as its start.
-  void set_lane(std::size_t lane, const Workspace& w);
+  /// Amounts and constants of the workspace as those of one lane.
+  void set_amounts(std::size_t lane, const Workspace& w);
+  /// The state of the workspace as the start of one lane.
+  void set_start(std::size_t lane, const Workspace& w);
   /// The state of one lane, for the answer.
   void copy_state(std::size_t lane, Workspace& w) const;
 };

@@ -258,6 +258,13 @@ struct Session::Storage {
   Mark mark;
   bool solved = false;  ///< the workspace stands at an answer
   Equilibrium other;    ///< a second answer to choose from
+  /// Where the last variants ended, eight at a time, over the basis of that number.
+  struct Eight {
+    LaneProblem problem;
+    std::array<bool, lanes> settled;  ///< stands at an answer
+  };
+  std::vector<Eight> eights;
+  std::uint64_t eights_basis = 0;
 
   explicit Storage(const Solver& s)
       : solver(&s), ln_K(s.ln_K()), workspace(s), mark(workspace), other(with_room_for(s.system())) {}
@@ -312,14 +319,26 @@ Outcome Session::solve_near_last(const Task& task, Equilibrium& answer) {
 
 Outcome Session::solve_variants(const Task& task, std::span<const Variant> variants,
                                 const VariantVisit& visit) {
+  return variants_from(Start::task, task, variants, visit);
+}
+
+Outcome Session::solve_variants_near_last(const Task& task, std::span<const Variant> variants,
+                                          const VariantVisit& visit) {
+  return variants_from(Start::last, task, variants, visit);
+}
+
+Outcome Session::variants_from(Start start, const Task& task, std::span<const Variant> variants,
+                               const VariantVisit& visit) {
   Storage& s = *storage_;
   Equilibrium answer;
   const Constants own = s.ln_K;
-  if (Outcome nominal = solve(task, answer); !nominal) return nominal;
+  if (Outcome nominal = start == Start::last ? solve_near_last(task, answer) : solve(task, answer); !nominal)
+    return nominal;
   Workspace& w = s.workspace;
   Mark nominal(w);
   nominal.set(w);
-  LaneProblem problem(w);
+  if (start == Start::task || s.eights_basis != w.basis()) s.eights.clear();
+  s.eights_basis = w.basis();
   LaneTables tables(w);
   Task varied = task;
   const auto vary = [&](const Variant& variant) {
@@ -327,10 +346,13 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
     varied.pH = task.pH;
     if (varied.pH && variant.pH) varied.pH->pH = *variant.pH;
   };
-  Session alone(*s.solver);  // for those that leave the lanes
+  std::optional<Session> alone;  // for those that leave the lanes
   constexpr int most_changes = 8;
   for (std::size_t first = 0; first < variants.size(); first += lanes) {
     const std::size_t count = std::min(lanes, variants.size() - first);
+    const std::size_t at = start == Start::last ? first / lanes : 0;
+    if (at == s.eights.size()) s.eights.push_back({LaneProblem(w), {}});
+    auto& [problem, settled] = s.eights[at];
     std::array<bool, lanes> in_lane{};
     nominal.restore(w);
     for (std::size_t lane = 0; lane < lanes; ++lane) {
@@ -338,7 +360,8 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
       vary(variant);
       in_lane[lane] = lane < count && check(s.solver->system(), varied) && w.reload(varied, variant.ln_K);
       if (!in_lane[lane]) w.reload(task, own);
-      problem.set_lane(lane, w);
+      problem.set_amounts(lane, w);
+      if (start == Start::task || !in_lane[lane] || !settled[lane]) problem.set_start(lane, w);
     }
     std::array<bool, lanes> arrived{};
     bool changed = true;
@@ -351,25 +374,27 @@ Outcome Session::solve_variants(const Task& task, std::span<const Variant> varia
           changed = true;
         }
     }
+    settled = {};
     for (std::size_t lane = 0; lane < count; ++lane) {
       const Variant& variant = variants[first + lane];
       vary(variant);
       s.ln_K = variant.ln_K;
       Outcome found = Done{};
-      bool settled = in_lane[lane] && arrived[lane];
-      if (settled) {
+      if (in_lane[lane] && arrived[lane]) {
         problem.copy_state(lane, w);
-        settled = static_cast<bool>(s.finish_with(varied, 0, answer));
+        settled[lane] = static_cast<bool>(s.finish_with(varied, 0, answer));
       }
-      if (!settled) {
-        alone.ln_K() = variant.ln_K;
-        found = alone.solve_near_last(varied, answer);
+      if (!settled[lane]) {
+        if (!alone) alone.emplace(*s.solver);
+        alone->ln_K() = variant.ln_K;
+        found = alone->solve_near_last(varied, answer);
       }
       visit(first + lane, found, answer);
     }
   }
   s.ln_K = own;
-  s.solved = false;
+  nominal.restore(w);
+  s.solved = w.reload(task, own);  // where the next task starts from
   return Done{};
 }
 

@@ -37,23 +37,28 @@ Residuals verify(const Solver& solver, const Constants& ln_K, const Task& task, 
     given_charge += system.species()[i].charge * task.component_mol[i];
   raise(worst.charge_mol_per_kg, charge - given_charge / answer.water_kg);
 
+  std::array<double, max_components> found{}, throughput{};
+  const auto tally = [&](std::size_t i, double mol) {
+    found[i] += mol;
+    throughput[i] += std::abs(mol);
+  };
+  const auto tally_all = [&](const std::vector<double>& made_of, double mol) {
+    if (mol == 0) return;
+    for (std::size_t i = 0; i < components; ++i) tally(i, made_of[i] * mol);
+  };
+  for (std::size_t j = 0; j < count; ++j)
+    tally_all(system.species()[j].made_of, answer.molality[j] * answer.water_kg);
+  for (std::size_t k = 0; k < answer.solid_mol.size(); ++k)
+    tally_all(system.solids()[k].made_of, answer.solid_mol[k]);
+  for (std::size_t g = 0; g < task.gases.size(); ++g)
+    tally_all(system.gases()[task.gases[g].gas].made_of, -answer.gas_mol[g]);
+  if (task.pH) {
+    tally(0, -answer.held_ph_mol);
+    tally(task.pH->counter_ion, answer.held_ph_mol / system.species()[task.pH->counter_ion].charge);
+  }
   for (std::size_t i = 0; i < components; ++i) {
-    double found = 0, throughput = 0;
-    const auto tally = [&](double mol) {
-      found += mol;
-      throughput += std::abs(mol);
-    };
-    for (std::size_t j = 0; j < count; ++j)
-      tally(system.species()[j].made_of[i] * answer.molality[j] * answer.water_kg);
-    for (std::size_t k = 0; k < answer.solid_mol.size(); ++k)
-      tally(system.solids()[k].made_of[i] * answer.solid_mol[k]);
-    for (std::size_t g = 0; g < task.gases.size(); ++g)
-      tally(-system.gases()[task.gases[g].gas].made_of[i] * answer.gas_mol[g]);
-    if (task.pH && i == 0) tally(-answer.held_ph_mol);
-    if (task.pH && i == task.pH->counter_ion)
-      tally(answer.held_ph_mol / system.species()[task.pH->counter_ion].charge);
-    const double scale = std::max({std::abs(task.component_mol[i]), throughput, 1e15 * absent_mol});
-    raise(worst.mass_balance, (found - task.component_mol[i]) / scale);
+    const double scale = std::max({std::abs(task.component_mol[i]), throughput[i], 1e15 * absent_mol});
+    raise(worst.mass_balance, (found[i] - task.component_mol[i]) / scale);
   }
 
   for (std::size_t k = 0; k < answer.solid_mol.size(); ++k) {

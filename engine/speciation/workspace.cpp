@@ -180,6 +180,7 @@ void Workspace::compile(const Task& task) {
 /// The components are the basis.
 void Workspace::over_components(Index rows) {
   rebased_ = false;
+  ++basis_;
   inverse_.setIdentity(rows, rows);
   members_.clear();
   for (Index i = 0; i < rows; ++i) members_.push_back({false, static_cast<std::size_t>(i)});
@@ -355,6 +356,7 @@ void Workspace::exchange(Index i, BasisMember member) {
   total_water -= of_member * h;
   members_[static_cast<std::size_t>(i)] = member;
   rebased_ = true;
+  ++basis_;
 }
 
 }  // namespace bathwright::speciation

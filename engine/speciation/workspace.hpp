@@ -57,6 +57,8 @@ class Workspace : public State {
   [[nodiscard]] Index count() const { return form_.A.cols(); }
   [[nodiscard]] std::size_t kinds() const { return model_->kinds(); }
   [[nodiscard]] const activity::ActivityModel& model() const { return *model_; }
+  /// Another number whenever what x stands for has changed.
+  [[nodiscard]] std::uint64_t basis() const { return basis_; }
 
   /// ln molality of every species at the current state.
   void ln_molality(SpeciesVector& result) const;
@@ -146,6 +148,7 @@ class Workspace : public State {
   Form original_;  ///< over the components, kept from the first change of basis on
   std::vector<Phase> original_phases_;
   std::vector<BasisMember> members_;
+  std::uint64_t basis_ = 0;
   Table inverse_;  ///< basis over components -> basis over members
 };
 

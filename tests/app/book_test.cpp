@@ -84,3 +84,30 @@ TEST_CASE("an analysis is weighed against what the log says, and a missing addit
   CHECK(sheet.status == 1);
   CHECK_THAT(sheet.out, Catch::Contains("not in the tank"));
 }
+
+TEST_CASE("tank and forecast start from the book of a log", "[unit][app]") {
+  const Bench bench;
+  const std::string tank = "--tank \"AL-1 sulfuric anodizing\" --log log.sqlite ";
+  const auto add = [&](const std::string& kind, const std::string& body) {
+    const auto run = bench.run("log add " + kind + " " + tank + "--body '" + body + "'");
+    INFO(run.err);
+    REQUIRE(run.status == 0);
+  };
+  add("analysis",
+      R"({"volume_L":8000,"temperature_C":20,"pH":0,"results":[{"quantity":"Al^3+","unit":"g/L","value":10},)"
+      R"({"quantity":"H2SO4","unit":"g/L","value":180},{"quantity":"Cl^-","unit":"g/L","value":0}]})");
+  add("addition", R"({"chemical":"sulfuric-acid","amount":80,"unit":"kg"})");
+  const auto state = bench.run("tank " PROJECT_DIR "/baths/al-1.toml --log log.sqlite --json");
+  INFO(state.err);
+  REQUIRE(state.status < 2);
+  CHECK(state.json().at("state_from").get<std::string>().find("carried through 1 entry logged since") !=
+        std::string::npos);
+  const double acid = state.json().at("concentrations").at("H2SO4").get<double>();
+  CHECK(acid > 188);  // 80 kg into 8000 L
+  const auto forecast = bench.run("forecast " PROJECT_DIR "/baths/al-1.toml " PROJECT_DIR
+                                  "/baths/policies/al-1.toml --samples 0 --log log.sqlite --json");
+  INFO(forecast.err);
+  REQUIRE(forecast.status < 2);
+  CHECK(forecast.json().at("series")[0].at("concentrations").at("H2SO4").get<double>() ==
+        Approx(acid).epsilon(1e-3));
+}

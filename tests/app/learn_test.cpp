@@ -68,7 +68,22 @@ TEST_CASE("a log teaches the drag-out and names a wrong titration", "[unit][app]
   CHECK(policy.find("film = \"1.0 mL/dm2\"") == std::string::npos);
   CHECK(policy.find("closed = [{ first_day = 60, days = 10 }]      # a summer shutdown") !=
         std::string::npos);
-  CHECK(bench.run("forecast " PROJECT_DIR "/baths/al-1.toml learned.toml --samples 0").status < 2);
+  // Its bands are of what the log told: narrower than those of what was stated, and of what belongs together.
+  CHECK(policy.find("effects_uncertainty") != std::string::npos);
+  CHECK(policy.find("[[correlated]]") != std::string::npos);
+  const auto width = [&](const std::string& of) {
+    const auto forecast =
+        bench.run("forecast " PROJECT_DIR "/baths/al-1.toml " + of + " --samples 60 --json");
+    INFO(forecast.err);
+    REQUIRE(forecast.status < 2);
+    const auto band = forecast.json().at("bands").at("Al^3+");
+    return band.at("p95")[30].get<double>() - band.at("p05")[30].get<double>();
+  };
+  CHECK(width("learned.toml") < 0.8 * width(PROJECT_DIR "/baths/policies/al-1.toml"));
+  // Learned once more it stays a policy.
+  CHECK(bench.run("learn " PROJECT_DIR "/baths/al-1.toml learned.toml --log log.sqlite --write again.toml")
+            .status < 2);
+  CHECK(bench.run("forecast " PROJECT_DIR "/baths/al-1.toml again.toml --samples 0").status < 2);
   CHECK(bench.run("learn " + files + " --log log.sqlite --write learned.toml").status !=
         0);  // never over a file
   CHECK(bench.read("learned.toml") == policy);

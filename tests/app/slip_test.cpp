@@ -1,5 +1,6 @@
 // The addition slip through the program: what an auditor finds on it, what keeps it from being issued, who
 // stands for it.
+#include <algorithm>
 #include <catch2/catch.hpp>
 
 #include "program.hpp"
@@ -43,11 +44,14 @@ TEST_CASE("the slip has what somebody who asks later needs", "[unit][command]") 
   for (const char* part :
        {"Slip 3", "line 2", "revision C from 2026-01-15, shift chemist",
         "no. 0302-7 of 2026-03-02 05:40 by J. Marsh", "by edta-nickel", "23.80 mL", "3 cm low on 200 dm2",
-        "NiSO₄·6H₂O, 99 %, plating; lot 24-0815", "2027-06-30", "2 x 25 kg and", "at most 10 g/L at once",
+        "NiSO₄·6H₂O, 99 %, plating; lot 24-0815", "2027-06-30", "2 x 25 kg and", "most 10 g/L at once",
         "Expected after each step", "prepared", "approved", "carried out", "witness", "found after",
         "nonconformance", "Re-analyse"})
     CHECK_THAT(run.out, Catch::Contains(part));
   CHECK(app_test::widest_line(run.out) <= 80);
+  // One A4 page holds 88 lines of 8 point.
+  const std::string page = run.out.substr(0, run.out.find("Computed with"));
+  CHECK(std::count(page.begin(), page.end(), '\n') < 88);
   CHECK_THAT(bench.read("slip.html"), Catch::Contains("<!DOCTYPE html>") && Catch::Contains("lot 24-0815") &&
                                           Catch::Contains("Slip 3"));
 }

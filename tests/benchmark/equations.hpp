@@ -50,6 +50,9 @@ class Equations {
   /// place of one present with the same ions). u keeps in step. false: nothing to change.
   bool change_solids(std::vector<double>& u);
 
+  /// As the coefficients stand.
+  [[nodiscard]] double ln_water_activity() const { return ln_aw_; }
+
   [[nodiscard]] Answer answer(const std::vector<double>& u) const;
 
  private:

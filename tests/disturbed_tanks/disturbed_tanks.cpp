@@ -95,9 +95,10 @@ bool something_brings(const bath::Tank& tank, const bath::Chemistry& chemistry,
   });
 }
 
-void judge(Case& one, const bath::Tank& tank, const bath::Chemistry& chemistry, const Ending& end,
-           const dosing::Plan& plan) {
-  bool outside = false, strong = false, weak = false, far = false;
+Ended judge(const bath::Tank& tank, const bath::Chemistry& chemistry, const Ending& end,
+            const dosing::Plan& plan) {
+  Ended one;
+  bool outside = false, strong = false, weak = false, lower = false, far = false;
   for (const bath::Aim& aim : tank.aims) {
     if (aim.quantity == "pH") {
       one.pH_error = end.pH - aim.aim;
@@ -105,26 +106,52 @@ void judge(Case& one, const bath::Tank& tank, const bath::Chemistry& chemistry, 
       far = far || std::abs(*one.pH_error) > met_pH;
       continue;
     }
+    const bath::Quantity& quantity = *chemistry.type().quantity(aim.quantity);
     const double level = end.g_per_L.at(aim.quantity);
     const double per_cent = 100 * (level / aim.aim - 1);
-    outside = outside || level < aim.low || level > aim.high;
+    const bool source = something_brings(tank, chemistry, quantity);
+    const bool not_missed = quantity.unwanted && (level >= aim.low || !source);
+    outside = outside || (level < aim.low && !not_missed) || level > aim.high;
     strong = strong || per_cent > met_per_cent;
-    if (per_cent < -met_per_cent)
-      (something_brings(tank, chemistry, *chemistry.type().quantity(aim.quantity)) ? far : weak) = true;
+    if (per_cent < -met_per_cent) (not_missed ? lower : source ? far : weak) = true;
     if (one.worst.empty() || std::abs(per_cent) > std::abs(one.worst_per_cent))
       one.worst = aim.quantity, one.worst_per_cent = per_cent;
   }
   one.element_defect = end.element_defect;
-  using enum Case::Outcome;
+  using enum Outcome;
   if (outside || !plan.feasible) {
     one.outcome = infeasible;
     one.why = joined(plan.conflicts);
     if (one.why.empty()) one.why = stopped_by(plan);
     if (one.why.empty()) one.why = joined(plan.unmet);
   } else {
-    one.outcome = far ? off : weak ? no_source : strong ? too_strong : met;
+    one.outcome = far ? off : strong ? too_strong : weak ? no_source : lower ? Outcome::thinner : met;
     if (one.outcome != met) one.why = joined(plan.unmet);
   }
+  return one;
+}
+
+/// A plan followed to its end.
+Ended ended(const bath::Tank& tank, const bath::Chemistry& chemistry, const bath::TankState& start,
+            const dosing::Plan& plan) {
+  Ended one;
+  const auto end = follow(tank, chemistry.type(), start, plan);
+  if (end)
+    one = judge(tank, chemistry, *end, plan);
+  else
+    one.why = "the end cannot be checked: " + first_line(end.problems());
+  one.kind = plan.kind;
+  one.steps = static_cast<int>(plan.steps.size());
+  one.decant_L = plan.decant_L;
+  if (!end) return one;
+  const auto& quantities = chemistry.type().quantities;
+  for (const bath::Aim& aim : tank.aims)
+    for (std::size_t q = 0; q < quantities.size(); ++q)
+      if (quantities[q].id == aim.quantity)
+        one.against_own_prediction =
+            std::max(one.against_own_prediction,
+                     std::abs(plan.final_view.quantity_g_per_L[q] / end->g_per_L.at(aim.quantity) - 1));
+  return one;
 }
 
 Case run(const bath::Tank& tank, const bath::Chemistry& chemistry, const std::string& file,
@@ -134,36 +161,24 @@ Case run(const bath::Tank& tank, const bath::Chemistry& chemistry, const std::st
   one.push = push.name;
   const auto start = pushed(tank, chemistry, push);
   if (!start) {
-    one.why = "no such tank: " + first_line(start.problems());
+    one.best.why = "no such tank: " + first_line(start.problems());
     return one;
   }
   dosing::Request request;
   request.dead_band = false;
+  request.bring_down = true;
   const std::clock_t begin = std::clock();
   const auto sheet = dosing::plan_additions(tank, chemistry, *start, request);
   one.milliseconds = 1000.0 * static_cast<double>(std::clock() - begin) / CLOCKS_PER_SEC;
   if (!sheet) {
-    one.why = first_line(sheet.problems());
+    one.best.why = first_line(sheet.problems());
     return one;
   }
-  const dosing::Plan& plan = sheet->plans.front();
-  one.kind = plan.kind;
   one.plans = static_cast<int>(sheet->plans.size());
-  one.steps = static_cast<int>(plan.steps.size());
-  one.decant_L = plan.decant_L;
-  const auto end = follow(tank, chemistry.type(), *start, plan);
-  if (!end) {
-    one.why = "the end cannot be checked: " + first_line(end.problems());
-    return one;
-  }
-  judge(one, tank, chemistry, *end, plan);
-  const auto& quantities = chemistry.type().quantities;
-  for (const bath::Aim& aim : tank.aims)
-    for (std::size_t q = 0; q < quantities.size(); ++q)
-      if (quantities[q].id == aim.quantity)
-        one.against_own_prediction =
-            std::max(one.against_own_prediction,
-                     std::abs(plan.final_view.quantity_g_per_L[q] / end->g_per_L.at(aim.quantity) - 1));
+  one.best = one.nearest = ended(tank, chemistry, *start, sheet->plans.front());
+  for (std::size_t p = 1; p < sheet->plans.size(); ++p)
+    if (Ended other = ended(tank, chemistry, *start, sheet->plans[p]); other.outcome < one.nearest.outcome)
+      one.nearest = std::move(other);
   return one;
 }
 
@@ -175,19 +190,21 @@ std::string cell(std::string text) {
 
 }  // namespace
 
-const char* words(Case::Outcome outcome) {
+const char* words(Outcome outcome) {
   switch (outcome) {
-    case Case::Outcome::met:
+    case Outcome::met:
       return "met";
-    case Case::Outcome::too_strong:
+    case Outcome::thinner:
+      return "by-product lower";
+    case Outcome::too_strong:
       return "left strong";
-    case Case::Outcome::no_source:
+    case Outcome::no_source:
       return "no source";
-    case Case::Outcome::off:
+    case Outcome::off:
       return "off";
-    case Case::Outcome::infeasible:
+    case Outcome::infeasible:
       return "infeasible";
-    case Case::Outcome::refused:
+    case Outcome::refused:
       return "refused";
   }
   return "";
@@ -207,7 +224,8 @@ std::vector<Case> push_all(const std::vector<std::string>& only) {
       Case one;
       one.tank = file;
       one.push = "none";
-      one.why = first_line(problems);
+      one.best.why = first_line(problems);
+      one.nearest = one.best;
       cases.push_back(std::move(one));
     };
     const auto tank = shopfiles::read_tank(path.string(), matter::StockCatalogue::built_in());
@@ -231,34 +249,42 @@ std::vector<Case> push_all(const std::vector<std::string>& only) {
 }
 
 std::string report(const std::vector<Case>& cases) {
-  std::map<Case::Outcome, int> count;
+  std::map<Outcome, int> count, nearest;
   std::vector<double> times;
   double prediction = 0, elements = 0;
   for (const Case& one : cases) {
-    ++count[one.outcome];
+    ++count[one.best.outcome];
+    ++nearest[one.nearest.outcome];
     if (one.plans > 0) times.push_back(one.milliseconds);
-    prediction = std::max(prediction, one.against_own_prediction);
-    elements = std::max(elements, one.element_defect);
+    for (const Ended* end : {&one.best, &one.nearest}) {
+      prediction = std::max(prediction, end->against_own_prediction);
+      elements = std::max(elements, end->element_defect);
+    }
   }
   std::ranges::sort(times);
   std::string text =
       "# Disturbed tanks\n\n"
       "Written by the target `disturbed_table`; do not edit. Every demonstration tank of `baths/`, filled to its mark, with "
-      "each controlled quantity 15 % below and above its aim, the pH 0.3 off, one at a time and all together; then the best "
-      "plan, followed to its end by a speciation of its own: masses from the plan, moles from the formulae, a cold solve. "
-      "The dead band is off. Amounts are rounded to what a shop can weigh.\n\n"
-      "| outcome | cases | what it means |\n|---|---|---|\n";
-  const auto line = [&](Case::Outcome outcome, const char* meaning) {
-    text += fmt::format("| {} | {} | {} |\n", words(outcome), count[outcome], meaning);
+      "each controlled quantity 15 % below and above its aim, the pH 0.3 off, one at a time and all together; then "
+      "planned back, with leave to take bath out for what is too strong, and each plan followed to its end by a "
+      "speciation of its own: masses from the plan, moles from the formulae, a cold solve. The best plan is the one "
+      "offered first, which takes no bath out where it can do without; the nearest is that of any kind which comes "
+      "closest to the aims. The dead band is off. Amounts are rounded to what a shop can weigh.\n\n"
+      "| outcome | best plan | nearest plan | what it means |\n|---|---|---|---|\n";
+  const auto line = [&](Outcome outcome, const char* meaning) {
+    text += fmt::format("| {} | {} | {} | {} |\n", words(outcome), count[outcome], nearest[outcome], meaning);
   };
-  line(Case::Outcome::met, "every aim within 0.5 %, the pH within 0.02");
+  line(Outcome::met, "every aim within 0.5 %, the pH within 0.02");
+  line(Outcome::thinner,
+       "every aim met but those of by-products and contaminants, which stand lower: nobody adds them");
+  line(Outcome::no_source,
+       "inside every window; nothing on the shelf brings what ends below its aim: the work does, or nobody");
   line(
-      Case::Outcome::too_strong,
+      Outcome::too_strong,
       "inside every window; something stands above its aim that only taking bath out would lower, and is left");
-  line(Case::Outcome::no_source, "inside every window; nothing on the shelf brings what ends below its aim");
-  line(Case::Outcome::off, "inside every window, but farther from an aim");
-  line(Case::Outcome::infeasible, "a window is missed, or a check stops a step: the last column says why");
-  line(Case::Outcome::refused, "no plan: the last column says why");
+  line(Outcome::off, "inside every window, but farther from an aim");
+  line(Outcome::infeasible, "a window is missed, or a check stops a step: the last column says why");
+  line(Outcome::refused, "no plan: the last column says why");
   if (!times.empty())
     text += fmt::format(
         "\nProcessor time of a sheet with all its plans: median {:.0f} ms, nine in ten below {:.0f} ms, longest "
@@ -269,14 +295,21 @@ std::string report(const std::vector<Case>& cases) {
       "elements poured in and held: {:.0e}.\n\n",
       100 * prediction, elements);
   text +=
-      "| tank | push | outcome | best plan | worst aim | off by % | pH off by | decant L | steps | ms | why |\n"
-      "|---|---|---|---|---|---|---|---|---|---|---|\n";
-  for (const Case& one : cases)
-    text += fmt::format("| {} | {} | {} | {} | {} | {:.2f} | {} | {} | {} | {:.0f} | {} |\n", one.tank,
-                        one.push, words(one.outcome), one.kind, one.worst, one.worst_per_cent,
-                        one.pH_error ? fmt::format("{:.3f}", *one.pH_error) : "",
-                        one.decant_L > 0 ? fmt::format("{:.0f}", one.decant_L) : "", one.steps,
-                        one.milliseconds, cell(one.why));
+      "| tank | push | outcome | best plan | worst aim | off by % | pH off by | decant L | steps | nearest plan | "
+      "outcome | decant L | ms | why |\n"
+      "|---|---|---|---|---|---|---|---|---|---|---|---|---|---|\n";
+  const auto litres = [](const Ended& end) {
+    return end.decant_L > 0 ? fmt::format("{:.0f}", end.decant_L) : "";
+  };
+  for (const Case& one : cases) {
+    const Ended& best = one.best;
+    const bool other = one.nearest.kind != best.kind;
+    text += fmt::format("| {} | {} | {} | {} | {} | {:.2f} | {} | {} | {} | {} | {} | {} | {:.0f} | {} |\n",
+                        one.tank, one.push, words(best.outcome), best.kind, best.worst, best.worst_per_cent,
+                        best.pH_error ? fmt::format("{:.3f}", *best.pH_error) : "", litres(best), best.steps,
+                        other ? one.nearest.kind : "", other ? words(one.nearest.outcome) : "",
+                        other ? litres(one.nearest) : "", one.milliseconds, cell(best.why));
+  }
   return text;
 }
 

@@ -74,6 +74,11 @@ int main(int argc, char** argv) {
 - An error is seen from about four times what lab and book leave open together: near 1 % from the titration and the sample, near
   1 % from the analysis before, more the longer ago it was. A missing addition of 2 % is inside that, and so is the wrong hydrate
   of any usual addition: of a 5 % addition it is 0.3 % of the tank.
+- Nor do many shifts add up to the wrong hydrate. An addition of 20 % of the content brings 1.3 % of the tank too little, one standard
+  uncertainty of lab and book together. What such additions leave missing grows with what was added from the lot, and that slope
+  would need some twenty additions of 20 % to stand out at 1 alarm in 1000, of the usual 0.2 % a shift hundreds of thousands; it is the
+  same as that of a drag-out a little larger than stated. No statistic is offered for it: the label, the lot's certificate and the
+  assay entered from it are where a hydrate is found.
 - An addition that was not logged and a titration that reads as much too high look the same where the chemical brings one thing
   that is titrated. Both are named, seldom one as clear; the analysis is repeated first. An unlogged addition of 20 % is far above
   the usual largest (10 g/L), so that a wrong titration is believed sooner; most of what is clear and wrong should come from there

@@ -11,6 +11,7 @@
 #include <cmath>
 #include <cstdlib>
 #include <iostream>
+#include <map>
 #include <random>
 
 #include "explanations.hpp"
@@ -154,9 +155,17 @@ class Simulation {
     return most;
   }
 
+  /// What a kg brings, worked out once: finding the species that make up a formula takes its time.
+  const bath::Brings& brings_of(const bath::ShelfItem& item) const {
+    auto known = brings_.find(item.stock.id);
+    if (known == brings_.end())
+      known = brings_.emplace(item.stock.id, must(chemistry_.brings(item.stock))).first;
+    return known->second;
+  }
+
   /// kg of a chemical that raises what it is added for by this share of what the tank should hold.
   double kg_for(const bath::ShelfItem& item, double share) const {
-    const auto brings = must(chemistry_.brings(item.stock));
+    const auto brings = brings_of(item);
     const auto what = added_for(brings);
     return what ? share * aim_.component_mol[*what] / brings.component_mol[*what] : 0;
   }
@@ -165,7 +174,7 @@ class Simulation {
   std::vector<const bath::ShelfItem*> feeds() const {
     std::vector<const bath::ShelfItem*> all;
     for (const bath::ShelfItem& item : tank_.shelf) {
-      const auto brings = must(chemistry_.brings(item.stock));
+      const auto brings = brings_of(item);
       const auto what = added_for(brings);
       if (!what || (chemistry_.type().acid_by_pH() && brings.component_mol[0] != 0)) continue;
       const std::string& species = chemistry_.components()[*what];
@@ -201,7 +210,7 @@ class Simulation {
     // What ran low is made up: weighed to half a per cent, a lot's assay as good.
     int entry = 1000;
     for (const bath::ShelfItem* item : feeds()) {
-      const auto brings = must(chemistry_.brings(item->stock));
+      const auto brings = brings_of(*item);
       const std::size_t what = *added_for(brings);
       const double lack = 1 - truth_.component_mol[what] / aim_.component_mol[what];
       if (lack < 0.01) continue;
@@ -284,7 +293,7 @@ class Simulation {
     using analysis::Mistake;
     const auto addition = [&](const bath::ShelfItem& item, double logged, double made) {
       const double kg = kg_for(item, planted.size);
-      const auto brings = must(chemistry_.brings(item.stock));
+      const auto brings = brings_of(item);
       put(tank, brings.component_mol, made * kg * (1 + 0.007 * today.noise[2]));
       fill_to(tank, volume_L);
       if (logged > 0)
@@ -384,6 +393,7 @@ class Simulation {
   const forecast::Compiled work_;
   bath::TankState truth_, aim_;
   double mark_is_off_ = 0;
+  mutable std::map<std::string, bath::Brings> brings_;
 };
 
 }  // namespace

@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <bathwright/data/csv.hpp>
 #include <cmath>
 #include <fstream>
@@ -31,6 +32,13 @@ const json* element_with(const json& list, const std::string& key, const std::st
   return nullptr;
 }
 
+/// A key as it is written in a path: "~1" stands for a '/' of its own (as in RFC 6901).
+std::string key_of(std::string part) {
+  for (std::size_t at = part.find("~1"); at != std::string::npos; at = part.find("~1", at + 1))
+    part.replace(at, 2, "/");
+  return part;
+}
+
 /// Arguments of a run with the names of its files in full.
 std::string in_full(std::string arguments) {
   for (const auto& [mark, folder] :
@@ -50,12 +58,14 @@ data::CsvTable table(const std::string& name, std::initializer_list<std::string_
 
 }  // namespace
 
+bool Figure::fits_by_hand() const { return std::abs(off_percent(by_hand)) <= tolerance_percent; }
 bool Figure::ok() const { return std::abs(off_percent(better != 0 ? better : by_hand)) <= tolerance_percent; }
 
 json at(const json& document, const std::string& where) {
   const json* here = &document;
   std::istringstream path(where);
   for (std::string part; std::getline(path, part, '/');) {
+    part = key_of(std::move(part));
     const std::size_t equals = part.find('=');
     if (part == "#") return here->is_array() ? json(here->size()) : json();
     if (here->is_array() && equals != std::string::npos) {
@@ -102,20 +112,35 @@ std::vector<Figure> figures() {
 }
 
 std::string markdown(const std::vector<Figure>& figures) {
-  std::string text =
+  const auto count = [&](auto&& which) { return std::ranges::count_if(figures, which); };
+  const auto told = [](const Figure& f) { return !f.run.empty(); };
+  const auto by_hand = [&](const Figure& f) { return told(f) && f.fits_by_hand(); };
+  std::string text = fmt::format(
       "# The demonstration scenarios, figure by figure\n\n"
-      "Written by the target `scenario_table`; do not edit. The figures by hand are those of a worked example that "
-      "neglects the volume of what is added and other things a shop's spreadsheet does; the note says which, and the "
-      "figure by hand that counts them stands under \"better\". A figure fits within its tolerance of the better one, "
-      "or of the one by hand where there is none. Tanks and readings are in `files/`, the runs in `runs.csv`.\n\n"
-      "| scenario | figure | unit | by hand | better | program | off % | fits | note |\n|---|---|---|---|---|---|---|---|---|\n";
+      "Written by the target `scenario_table`; do not edit. The scenarios are worked by hand as a shop's spreadsheet does "
+      "it: the volume of what is added is neglected, levels stand still between two additions. Tanks, readings and "
+      "policies are in `files/`, the runs in `runs.csv`. Of {} figures the program tells {}: {} fit within the "
+      "tolerance, {} miss. A miss is judged again under \"better\", worked by hand with what the note says the "
+      "scenario left out: {} of them fit that. \"Not told\" is a step of the calculation that no command prints, or "
+      "what the note says.\n\n"
+      "| scenario | figure | unit | by hand | program | off % | within % | fits | better | off % | fits | note |\n"
+      "|---|---|---|---|---|---|---|---|---|---|---|---|\n",
+      figures.size(), count(told), count(by_hand),
+      count([&](const Figure& f) { return told(f) && !f.fits_by_hand(); }),
+      count([&](const Figure& f) { return told(f) && !f.fits_by_hand() && f.better != 0 && f.ok(); }));
+  const auto yes = [](bool fits) { return fits ? "yes" : "MISS"; };
   for (const Figure& f : figures) {
-    const bool told = !f.run.empty();
-    text += fmt::format("| {} | {} | {} | {:.6g} | {} | {} | {} | {} | {} |\n", f.scenario, f.label, f.unit,
-                        f.by_hand, f.better != 0 ? fmt::format("{:.6g}", f.better) : "",
-                        told ? fmt::format("{:.6g}", f.found) : "",
-                        told ? fmt::format("{:+.3f}", f.off_percent(f.by_hand)) : "",
-                        told ? (f.ok() ? "yes" : "NO") : "not told", f.note);
+    text += fmt::format("| {} | {} | {} | {:.6g} | ", f.scenario, f.label, f.unit, f.by_hand);
+    if (told(f))
+      text += fmt::format("{:.6g} | {:+.3f} | {:g} | {} | ", f.found, f.off_percent(f.by_hand),
+                          f.tolerance_percent, yes(f.fits_by_hand()));
+    else
+      text += "| | | not told | ";
+    if (told(f) && f.better != 0)
+      text += fmt::format("{:.6g} | {:+.3f} | {} | ", f.better, f.off_percent(f.better), yes(f.ok()));
+    else
+      text += "| | | ";
+    text += f.note + " |\n";
   }
   return text;
 }

@@ -21,14 +21,16 @@ struct Figure {
   std::string note;  ///< why there is no run, or what was left out
   double found = 0;  ///< NaN where it is not there
   [[nodiscard]] double off_percent(double from) const { return 100 * (found / from - 1); }
-  [[nodiscard]] bool ok() const;
+  [[nodiscard]] bool fits_by_hand() const;
+  [[nodiscard]] bool ok() const;  ///< fits the better one; the one by hand where there is none
 };
 
 /// Every figure, with what the program finds.
 [[nodiscard]] std::vector<Figure> figures();
 
 /// What stands at `where` in a document: keys, numbers of places in a list, or key=value of the one element
-/// of a list that has it, with '/' between; the number of elements behind "#". Null where there is nothing.
+/// of a list that has it, with '/' between, "~1" for a '/' of a key; the number of elements behind "#". Null
+/// where there is nothing.
 [[nodiscard]] nlohmann::json at(const nlohmann::json& document, const std::string& where);
 
 /// The whole as Markdown.

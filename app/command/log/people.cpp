@@ -108,7 +108,8 @@ void add_people(CLI::App& log, Context& context, Action& action) {
       "Examples:\n"
       "  bathwright log people admit \"A. Chemist\" --role chemist\n"
       "  bathwright log people admit \"M. Okafor\" --role operator --by \"A. Chemist\"\n"
-      "  bathwright log people second --tank \"C-04\" addition slip --by \"A. Chemist\"\n"
+      "  bathwright log people second --tank \"C-04\" addition slip-approved --by \"A. Chemist\"\n"
+      "slip-approved: nothing is added against a slip before a second person approved it (log approve).\n"
       "An operator writes a shift's entries; a chemist also slips, dumps and rules; an auditor reads only.\n"
       "The first of a log is its chemist. From then on every entry is signed with a PIN.\n");
 

@@ -4,6 +4,7 @@
 
 #include "shared_options.hpp"
 #include "verbs.hpp"
+#include "work/what_must_not_meet.hpp"
 
 namespace bathwright::command::log_verb {
 namespace {
@@ -26,15 +27,62 @@ Result<std::vector<std::string>> note_of_new_tank(const Context& context, const 
   return std::vector<std::string>{note + (tanks.empty() ? "" : ".")};
 }
 
-int append(const Context& context, logbook::NewEntry entry) {
-  const auto notes = note_of_new_tank(context, entry.tank);
+int append(const Context& context, logbook::NewEntry entry, const std::vector<std::string>& more_notes = {}) {
+  auto notes = note_of_new_tank(context, entry.tank);
   if (!notes) return fail(context, notes.problems());
-  return tell(context, append_to_log(context, std::move(entry)), *notes);
+  std::vector<std::string> all = *std::move(notes);
+  all.insert(all.end(), more_notes.begin(), more_notes.end());
+  return tell(context, append_to_log(context, std::move(entry)), all);
+}
+
+Json json_of(const std::vector<MustNotMeet>& stops) {
+  Json all = Json::array();
+  for (const MustNotMeet& one : stops)
+    all.push_back({{"chemical", one.chemical}, {"rule", one.rule}, {"why", one.why}});
+  return all;
+}
+
+/// What must never meet is logged only as what happened. Nothing is logged where it is told as work.
+int append_stopped(const Context& context, logbook::NewEntry entry, const Met& met, bool happened) {
+  const sheets::Lines lines = alarm(entry.tank, met.stops, happened);
+  std::optional<Logged> logged;
+  if (happened) {
+    Json body = Json::parse(entry.body, nullptr, false);
+    if (!body.is_object()) body = Json{{"told", body}};
+    body["event"] = true;
+    body["stops"] = json_of(met.stops);
+    entry.body = body.dump();
+    auto written = append_to_log(context, std::move(entry));
+    if (!written) {
+      if (!context.json) print(lines);
+      return fail(context, written.problems());
+    }
+    logged = *std::move(written);
+  }
+  if (context.json) {
+    std::vector<std::string> warnings;
+    for (const MustNotMeet& one : met.stops)
+      warnings.push_back("STOP: " + one.chemical + " (" + one.rule + "): " + one.why);
+    Json doc = document(warnings);
+    doc["stops"] = json_of(met.stops);
+    doc["entry"] = logged ? log_verb::json_of(logged->entry) : Json(nullptr);
+    doc["log"] = log_path(context).string();
+    print(doc);
+  } else {
+    print(lines);
+    if (logged) {
+      sheets::Lines words_of_log{""};
+      sheets::say(words_of_log, words(*logged));
+      print(words_of_log);
+    }
+  }
+  return Exit::finding;
 }
 
 struct AddOptions {
   std::string kind, tank, body, note, happened;
   std::optional<std::int64_t> slip;
+  bool event = false;
 };
 
 /// When it was done, by the clock of the log's shop.
@@ -65,7 +113,16 @@ int add(const Context& context, const AddOptions& options) {
     if (!time) return fail(context, time.problems());
     entry.happened = *time;
   }
-  return append(context, std::move(entry));
+  if (options.event && (*kind != logbook::EntryKind::addition || options.slip))
+    return fail(context, {{Fault::bad_input, "log add --event",
+                           options.slip ? "is of what no slip ordered" : "is of an addition",
+                           "an addition without --slip", ""}});
+  using enum logbook::EntryKind;
+  if (*kind != addition && *kind != plan && *kind != slip) return append(context, std::move(entry));
+  const auto met = met_in_tank(context, entry.tank, Json::parse(entry.body, nullptr, false));
+  if (!met) return fail(context, met.problems());
+  if (!met->stops.empty()) return append_stopped(context, std::move(entry), *met, options.event);
+  return append(context, std::move(entry), *kind == addition ? met->not_checked : std::vector<std::string>());
 }
 
 /// An entry that answers an earlier one, of the same tank.
@@ -128,6 +185,8 @@ void add_writing(CLI::App& log, Context& context, Action& action) {
   add_verb->add_option("--body", entry->body, "what happened, as JSON");
   add_verb->add_option("--slip", entry->slip, "of an addition: the number of the slip that ordered it");
   add_verb->add_option("--happened", entry->happened, "when it was done, if not now: \"2026-03-02 05:40\"");
+  add_verb->add_flag("--event", entry->event,
+                     "of an addition: it happened though it must not, and is told as that, not as work");
   add_signature(*add_verb, context);
   add_verb->callback(
       [&context, &action, entry] { action = [&context, entry] { return add(context, *entry); }; });

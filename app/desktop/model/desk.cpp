@@ -15,6 +15,7 @@
 #include "work/hand_over_document.hpp"
 #include "work/slip.hpp"
 #include "work/user_folders.hpp"
+#include "work/what_must_not_meet.hpp"
 #include "work/whole_file.hpp"
 
 namespace bathwright::desktop {
@@ -135,6 +136,7 @@ void Desk::handle(const Intent& intent) {
       Overloaded{[&](const GoTo& to) {
                    view_.page = to.page;
                    fault_.clear();
+                   said_.clear();
                    if (to.page == PageName::forecast && !forecasted_) ask_forecast();
                    if (to.page == PageName::trends) ask_trends();
                    if (to.page == PageName::bath_types) list_bath_types();
@@ -265,15 +267,15 @@ void Desk::drag(const DragAmount& drag) {
   begin_edit();
   if (drag.addition < 0 || drag.addition >= static_cast<int>(edited_.size())) return;
   auto& [id, kg] = edited_[static_cast<std::size_t>(drag.addition)];
-  const bath::ShelfItem* item = tank()->on_shelf(id);
-  if (!item) return;
-  kg = item->stock.liquid ? drag.amount * item->stock.kg_per_L : drag.amount;
+  const matter::StockChemical* stock = stock_of(*tank(), id);
+  if (!stock) return;
+  kg = stock->liquid ? drag.amount * stock->kg_per_L : drag.amount;
   ask();
 }
 
 void Desk::add_chemical(const std::string& chemical) {
   const bath::Tank* open = tank();
-  if (!open || !open->on_shelf(chemical) || !worked_ || !worked_->sheet) return;
+  if (!open || !stock_of(*open, chemical) || !worked_ || !worked_->sheet) return;
   begin_edit();
   constexpr double first_kg = 1;  // something to drag from
   edited_.emplace_back(chemical, first_kg);
@@ -382,6 +384,15 @@ void Desk::log_entry(Result<logbook::NewEntry> entry, const Names& names) {
   }
   fault_.clear();
   signing_.start([session = signed_by(session_, names), entry = *std::move(entry)]() -> Result<std::string> {
+    if (entry.kind == logbook::EntryKind::addition) {
+      const auto met = work::met_in_tank(session, entry.tank, work::Json::parse(entry.body, nullptr, false));
+      if (!met) return met.problems();
+      if (!met->stops.empty())
+        return Problem{
+            Fault::refused, met->stops.front().chemical, met->stops.front().why, "",
+            "Add nothing of it. What has gone in already is logged as an event: bathwright log add "
+            "addition --event."};
+    }
     const auto logged = work::append_to_log(session, entry);
     if (!logged) return logged.problems();
     return work::words(*logged);
@@ -444,6 +455,15 @@ bool Desk::update() {
   if (auto answer = tank_job_.take()) {
     changed_ = true;
     if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)]) {
+      if (!answer->now && worked_ && worked_->now) {
+        // What cannot be read as it stands takes the plans away, and leaves the tank as it was last known.
+        answer->now = worked_->now;
+        answer->shop = worked_->shop;
+        answer->read = sheets::StateRead{"as it was before: the readings cannot be read as they stand",
+                                         worked_->shop->tank.temperature,
+                                         worked_->now->pH,
+                                         {}};
+      }
       worked_ = std::move(answer);
       if (worked_->shop && !draft_) {
         blank_ = blank_draft(worked_->shop->tank, worked_->shop->type());

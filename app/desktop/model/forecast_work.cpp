@@ -84,7 +84,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
       continue;
     const auto bleed = forecast->bleed_to_hold(start->state, limit.quantity, limit.g_per_L);
     if (bleed && *bleed)
-      told.bleeds.push_back({shop.type().quantity(limit.quantity)->label, **bleed, std::nullopt});
+      told.bleeds.push_back({shop.type().quantity(limit.quantity)->label, **bleed, std::nullopt, {}, {}});
   }
   give(told);
   progress_ = 0;

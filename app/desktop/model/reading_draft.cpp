@@ -3,6 +3,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <bathwright/units/read.hpp>
 #include <bathwright/units/show.hpp>
 #include <fstream>
 #include <iterator>
@@ -70,15 +71,31 @@ std::string& field_of(Draft& draft, int row, Field field) {
 
 Draft blank_draft(const bath::Tank& tank, const bath::BathType& type) {
   Draft draft;
-  for (const bath::Aim& aim : tank.aims) {
-    const bath::Quantity* quantity = type.quantity(aim.quantity);
-    if (!quantity) continue;
+  const auto add = [&](const bath::Quantity& quantity) {
+    if (std::ranges::find(draft.rows, quantity.id, &DraftRow::quantity) != draft.rows.end()) return;
     DraftRow row;
-    row.quantity = aim.quantity;
-    row.methods = analysis::methods_for(*quantity);
+    row.quantity = quantity.id;
+    row.methods = analysis::methods_for(quantity);
     row.methods.emplace_back();
     set_usual(row);
     draft.rows.push_back(std::move(row));
+  };
+  for (const bath::Aim& aim : tank.aims) {
+    const bath::Quantity* quantity = type.quantity(aim.quantity);
+    if (!quantity) continue;
+    bool found_by_parts = false;
+    // Nobody titrates nickel sulfate: a salt is what its components make up, and those are read.
+    if (quantity->salt_view)
+      for (const bath::Quantity& part : type.quantities) {
+        const bool of_it = !part.salt_view && part.counts.size() == 1 &&
+                           std::ranges::any_of(quantity->counts, [&](const auto& counted) {
+                             return counted.first == part.counts.begin()->first;
+                           });
+        if (!of_it || analysis::methods_for(part).empty()) continue;
+        add(part);
+        found_by_parts = true;
+      }
+    if (!found_by_parts) add(*quantity);
   }
   return draft;
 }
@@ -91,7 +108,11 @@ std::string readings_text(const Draft& draft, const HeadUnits& units, std::vecto
     ++line;
   };
   if (!draft.sampled.empty()) add("sampled = " + draft.sampled);
-  if (!draft.volume.empty()) add("volume = " + in_quotes(with_unit(draft.volume, units.volume)));
+  if (!draft.volume.empty()) {
+    const bool level = units::read_length(draft.volume).operator bool();
+    add(level ? "level_below_mark = " + in_quotes(draft.volume)
+              : "volume = " + in_quotes(with_unit(draft.volume, units.volume)));
+  }
   if (!draft.temperature.empty())
     add("temperature = " + in_quotes(with_unit(draft.temperature, units.temperature)));
   if (!draft.pH.empty()) add("pH = " + number(draft.pH));

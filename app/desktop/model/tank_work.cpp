@@ -27,9 +27,9 @@ std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& fr
   };
   add();
   for (const dosing::Step& step : plan.steps) {
-    const bath::ShelfItem* item = shop.tank.on_shelf(step.chemical);
-    if (!item) continue;
-    const auto brings = shop.chemistry.brings(item->stock);
+    const matter::StockChemical* stock = stock_of(shop.tank, step.chemical);
+    if (!stock) continue;
+    const auto brings = shop.chemistry.brings(*stock);
     if (!brings) continue;
     for (int i = 0; i < points_a_step && !stop.stop_requested(); ++i) {
       state = bath::Chemistry::after(std::move(state), *brings, step.kg / points_a_step);
@@ -41,6 +41,11 @@ std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& fr
 }
 
 }  // namespace
+
+const matter::StockChemical* stock_of(const bath::Tank& tank, const std::string& id) {
+  const bath::ShelfItem* item = tank.on_shelf(id);
+  return item ? &item->stock : matter::StockCatalogue::built_in().find(id);
+}
 
 Result<std::shared_ptr<const work::Shop>> TankWork::opened(const Question& question) {
   std::error_code failed;
@@ -110,8 +115,8 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
   if (!question.edited.empty()) {
     std::vector<dosing::Wanted> wanted;
     for (const auto& [id, kg] : question.edited)
-      if (const bath::ShelfItem* item = (*shop)->tank.on_shelf(id); item && kg > 0)
-        wanted.push_back({item->stock, kg});
+      if (const matter::StockChemical* stock = stock_of((*shop)->tank, id); stock && kg > 0)
+        wanted.push_back({*stock, kg});
     auto own = dosing::check_plan((*shop)->tank, (*shop)->chemistry, from, wanted);
     if (own)
       worked.own = *std::move(own);

@@ -43,6 +43,9 @@ struct Worked {
   Problems problems;                           ///< what kept the rest from being worked out
 };
 
+/// On the tank's shelf, else in the catalogue; nullptr where nobody knows it.
+[[nodiscard]] const matter::StockChemical* stock_of(const bath::Tank& tank, const std::string& id);
+
 /// Remembers what does not change from question to question: the opened shop and the plans for one set of
 /// readings.
 class TankWork {

@@ -8,6 +8,7 @@
 #include <bathwright/units/show.hpp>
 #include <chrono>
 #include <cmath>
+#include <set>
 
 namespace bathwright::desktop {
 namespace {
@@ -50,6 +51,37 @@ std::string without_place(const Problem& problem) {
   return told.text();
 }
 
+/// A sentence with its formulae as people see them.
+std::string pretty_words(const std::string& sentence) {
+  std::string out, word;
+  const auto end_word = [&] {
+    std::string tail;
+    while (!word.empty() && (word.back() == ':' || word.back() == ',' || word.back() == ';'))
+      tail.insert(tail.begin(), word.back()), word.pop_back();
+    const bool may_be_formula = !word.empty() && word.front() >= 'A' && word.front() <= 'Z' &&
+                                word.find_first_of("0123456789^") != std::string::npos;
+    out += (may_be_formula ? pretty(word) : word) + tail;
+    word.clear();
+  };
+  for (const char c : sentence) {
+    if (c == ' ') {
+      end_word();
+      out += c;
+    } else {
+      word += c;
+    }
+  }
+  end_word();
+  return out;
+}
+
+/// "edta nickel" of the id "edta-nickel".
+std::string method_words(std::string id) {
+  if (id.empty()) return "a concentration";
+  std::ranges::replace(id, '-', ' ');
+  return id;
+}
+
 std::string room_words(double kg, double log10_room, bool covered) {
   if (!covered) return "";
   if (std::isfinite(kg)) return units::significant(kg, 2) + " kg";
@@ -67,15 +99,15 @@ const dosing::Plan* shown_plan(const Worked& worked, int plan) {
 ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row, const Worked* worked,
                            const Units& units) {
   ReadingsView view;
-  view.sampled = draft.sampled;
+  view.sampled = draft.sampled.substr(0, draft.sampled.rfind(':'));
+  std::ranges::replace(view.sampled, 'T', ' ');
   view.volume = draft.volume;
   view.temperature = draft.temperature;
   view.pH = draft.pH;
   for (const DraftRow& row : draft.rows) {
     ReadingRow shown;
     shown.quantity = pretty(row.quantity);
-    for (const std::string& method : row.methods)
-      shown.methods.push_back(method.empty() ? "as a concentration" : method);
+    for (const std::string& method : row.methods) shown.methods.push_back(method_words(method));
     shown.method = row.method;
     shown.sample = row.sample;
     shown.titrant = row.titrant;
@@ -103,7 +135,7 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
   }
   if (worked->analysed) {
     for (const auto& suspect : worked->analysed->analysis.suspects)
-      view.suspects.push_back(suspect.what + ": " + suspect.reason + " " + suspect.try_this);
+      view.suspects.push_back(pretty_words(suspect.what + ": " + suspect.reason + " " + suspect.try_this));
     for (const std::string& change : worked->analysed->changed_since) view.suspects.push_back(change);
   }
   return view;
@@ -162,16 +194,31 @@ AdditionsView additions_view(const Worked& worked, int chosen,
         one.kind + ", " + money(one.cost) +
         (one.chances ? ", " + fixed(100 * one.chances->in_every_window, 0) + " %" : std::string()));
   for (const bath::ShelfItem& item : tank.shelf) view.shelf.emplace_back(item.stock.id, item.stock.name);
+  for (const std::string& id : matter::StockCatalogue::built_in().ids())
+    if (!tank.on_shelf(id))
+      view.shelf.emplace_back(id, stock_of(tank, id)->name + " (not on this tank's shelf)");
   const dosing::Plan& planned =
       worked.sheet->plans[std::min(static_cast<std::size_t>(chosen), worked.sheet->plans.size() - 1)];
-  for (const dosing::Addition& addition : planned.additions) {
-    AdditionRow row{addition.name, addition.unit, addition.amount, 2 * addition.amount, ""};
-    const double per_kg = addition.kg > 0 ? addition.amount / addition.kg : 1;
-    for (const auto& [id, kg] : edited)
-      if (id == addition.chemical) row.amount = kg * per_kg;
-    row.cost = money(addition.amount > 0 ? addition.cost * row.amount / addition.amount : 0);
-    view.additions.push_back(std::move(row));
+  const auto planned_amount = [&](const std::string& id) {
+    const auto addition = std::ranges::find(planned.additions, id, &dosing::Addition::chemical);
+    return addition == planned.additions.end() ? 0 : addition->amount;
+  };
+  const auto cost_of = [&](const std::string& id) {
+    const auto addition = std::ranges::find(plan->additions, id, &dosing::Addition::chemical);
+    return addition == plan->additions.end() ? std::string() : money(addition->cost);
+  };
+  if (edited.empty())
+    for (const dosing::Addition& addition : planned.additions)
+      view.additions.push_back(
+          {addition.name, addition.unit, addition.amount, 2 * addition.amount, money(addition.cost)});
+  for (const auto& [id, kg] : edited) {
+    const matter::StockChemical* stock = stock_of(tank, id);
+    const double amount = stock->liquid ? kg / stock->kg_per_L : kg, planned_one = planned_amount(id);
+    constexpr double usual = 25;  // a bag
+    view.additions.push_back({stock->name, stock->liquid ? "L" : "kg", amount,
+                              planned_one > 0 ? 2 * planned_one : std::max(usual, amount), cost_of(id)});
   }
+  std::set<std::string> told;  // what to look at is said once, at the step it begins with
   for (const dosing::Step& step : plan->steps) {
     StepRow row;
     row.number = std::to_string(step.number);
@@ -186,8 +233,8 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     row.then += units.volume(step.predicted.volume_L);
     if (step.wait_h > 0) row.wait = "wait " + figure(step.wait_h, 2) + " h, stirred";
     for (const dosing::Check& check : step.checks) {
-      if (check.ok) continue;
-      (check.stops ? row.stops : row.watch).push_back(check.name + ": " + check.detail);
+      if (check.ok || (!check.stops && !told.insert(check.name).second)) continue;
+      (check.stops ? row.stops : row.watch).push_back(pretty_words(check.name + ": " + check.detail));
     }
     row.checks = static_cast<int>(step.checks.size());
     row.refused = !row.stops.empty();
@@ -195,7 +242,7 @@ AdditionsView additions_view(const Worked& worked, int chosen,
   }
   const dosing::AdditionSheet& sheet = worked.own ? *worked.own : *worked.sheet;
   for (const dosing::Refusal& refusal : sheet.refused)
-    view.refused.push_back(refusal.reason + " (" + refusal.rule + ")");
+    view.refused.push_back(pretty_words(refusal.reason + " (" + refusal.rule + ")"));
   view.cautions = sheet.cautions;
   view.unmet = plan->unmet;
   if (plan->chances)
@@ -270,7 +317,7 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
       view.path.push_back(std::move(rooms));
     }
   }
-  view.doubts = now.warnings;
+  for (const std::string& warning : now.warnings) view.doubts.push_back(pretty_words(warning));
   return view;
 }
 
@@ -407,9 +454,10 @@ ShiftView shift_view(const LogNow& log, shifts::UtcTime now) {
     view.entries.push_back(row_of(*entry, log.calendar));
     if (const auto time = logbook::utc_from_iso(entry->at)) view.entries.back().place = share(*time);
   }
-  for (const logbook::Entry& slip : log.told->open_slips)
+  for (const auto& [slip, approved_by, must_be_approved] : log.told->open_slips)
     view.open.push_back("slip " + std::to_string(slip.seq) + " of " +
-                        slip.tank.substr(0, slip.tank.find(' ')));
+                        slip.tank.substr(0, slip.tank.find(' ')) +
+                        (must_be_approved && approved_by.empty() ? ", waits for approval" : ""));
   for (const shifts::Due& due : log.told->due)
     view.due.push_back(due.tank.substr(0, due.tank.find(' ')) + " " +
                        pretty(due.what.substr(due.what.rfind(' ') + 1)) + (due.overdue ? " (overdue)" : ""));
@@ -431,14 +479,15 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   view.from = "from " + told.from;
   const Levers& levers = told.levers;
   constexpr double longest_horizon = 730;
-  view.levers = {{"bleed", "L/day", levers.bleed_L_per_day, 0, 0},
-                 {"drag-out", "times the policy's", levers.drag_out, 0.2, 3},
-                 {"work", "times the policy's", levers.load, 0, 3},
-                 {"horizon", "days", static_cast<double>(levers.horizon_days), 14, longest_horizon}};
+  view.levers = {{"bleed", units.volume(levers.bleed_L_per_day) + "/day", levers.bleed_L_per_day, 0, 0},
+                 {"drag-out", figure(levers.drag_out, 3) + " times", levers.drag_out, 0.2, 3},
+                 {"work", figure(levers.load, 3) + " times", levers.load, 0, 3},
+                 {"horizon", std::to_string(levers.horizon_days) + " days",
+                  static_cast<double>(levers.horizon_days), 14, longest_horizon}};
   for (std::size_t i = 0; i < told.limits.size(); ++i) {
     const auto& limit = told.limits[i];
     LimitRow row;
-    row.name = pretty(limit.name);
+    row.name = pretty_words(limit.name);
     row.why = std::string(forecast::name(limit.cause));
     if (limit.day) {
       row.state = charts::State::act;
@@ -446,8 +495,8 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
       if (told.sampled && limit.day_p05 && limit.day_p95)
         row.span = fixed(*limit.day_p05, 0) + " to " + fixed(*limit.day_p95, 0);
     } else {
-      row.when =
-          limit.share > 0 ? fixed(100 * limit.share, 0) + " % of the samples" : "not within the horizon";
+      row.when = limit.share > 0 ? fixed(100 * limit.share, 0) + " % of the samples"
+                                 : "not in " + std::to_string(levers.horizon_days) + " days";
     }
     view.limits.push_back(std::move(row));
   }
@@ -464,8 +513,8 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   double most_bleed = 0;
   for (const auto& bleed : told.bleeds) {
     view.figures.emplace_back("bleed that holds " + bleed.limit,
-                              figure(bleed.litres_per_day, 3) + " L more a day");
-    most_bleed = std::max(most_bleed, levers.bleed_L_per_day + bleed.litres_per_day);
+                              figure(*bleed.litres_per_day, 3) + " L more a day");
+    most_bleed = std::max(most_bleed, levers.bleed_L_per_day + *bleed.litres_per_day);
   }
   constexpr double usual_bleed = 200;
   view.levers[0].high = std::max({usual_bleed, 2 * levers.bleed_L_per_day, 1.5 * most_bleed});

@@ -3,7 +3,7 @@
 namespace bathwright::desktop {
 namespace {
 
-void draw_amounts(const AdditionsView& view, Intents& out) {
+void draw_amounts(const AdditionsView& view, const Look& look, Intents& out) {
   if (!ImGui::BeginTable("amounts", 3, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] : {std::pair{"chemical", 1.6F}, {"amount", 2.4F}, {"cost", 0.8F}})
     ImGui::TableSetupColumn(name, 0, weight);
@@ -15,12 +15,17 @@ void draw_amounts(const AdditionsView& view, Intents& out) {
     ImGui::TextUnformatted(row.chemical.c_str());
     ImGui::TableNextColumn();
     ImGui::PushID(static_cast<int>(i));
-    ImGui::SetNextItemWidth(-1);
     double amount = row.amount;
     const double least = 0;
-    const std::string form = (row.largest < 10 ? "%.3f " : "%.2f ") + row.unit;
-    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, form.c_str()))
-      out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
+    ImGui::SetNextItemWidth(look.px(84));
+    bool changed = ImGui::InputDouble("##typed", &amount, 0, 0, row.largest < 10 ? "%.3f" : "%.2f");
+    note_place(look, "amount " + row.chemical);
+    ImGui::SameLine(look.px(120));
+    ImGui::SetNextItemWidth(-1);
+    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, ""))
+      changed = true;
+    note_place(look, "slider " + row.chemical);
+    if (changed) out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
     ImGui::PopID();
     ImGui::TableNextColumn();
     ImGui::AlignTextToFramePadding();
@@ -48,13 +53,19 @@ void draw_add(const AdditionsView& view, PanelState& state, const Look& look, In
   if (view.shelf.empty()) return;
   const auto chosen = std::min(static_cast<std::size_t>(state.add), view.shelf.size() - 1);
   ImGui::SetNextItemWidth(look.px(240));
-  if (ImGui::BeginCombo("##shelf", view.shelf[chosen].second.c_str())) {
-    for (std::size_t i = 0; i < view.shelf.size(); ++i)
+  const bool open =
+      ImGui::BeginCombo("##shelf", view.shelf[chosen].second.c_str(), ImGuiComboFlags_HeightLarge);
+  note_place(look, "shelf");
+  if (open) {
+    note_window(look, "shelf list");
+    for (std::size_t i = 0; i < view.shelf.size(); ++i) {
       if (ImGui::Selectable(view.shelf[i].second.c_str(), i == chosen)) state.add = static_cast<int>(i);
+      note_place(look, "shelf " + view.shelf[i].first);
+    }
     ImGui::EndCombo();
   }
   ImGui::SameLine();
-  if (ImGui::Button("Add it to the list")) out.emplace_back(AddChemical{view.shelf[chosen].first});
+  if (button(look, "Add it to the list")) out.emplace_back(AddChemical{view.shelf[chosen].first});
 }
 
 }  // namespace
@@ -68,20 +79,23 @@ void draw_additions(const AdditionsView& view, PanelState& state, const Look& lo
   for (std::size_t i = 0; i < view.plans.size(); ++i) {
     if (ImGui::RadioButton(view.plans[i].c_str(), static_cast<int>(i) == view.plan && !view.edited))
       out.emplace_back(ChoosePlan{static_cast<int>(i)});
+    note_place(look, "plan " + std::to_string(i + 1));
   }
   if (view.edited) {
     said(look, look.palette.act, "amounts changed by hand");
     ImGui::SameLine();
-    if (ImGui::SmallButton("back to the plan")) out.emplace_back(BackToPlan{});
+    if (button(look, "Back to the plan")) out.emplace_back(BackToPlan{});
   }
-  draw_amounts(view, out);
+  draw_amounts(view, look, out);
   draw_add(view, state, look, out);
   if (!view.chance.empty()) quiet(look, view.chance);
   for (const std::string& unmet : view.unmet) standing(look, static_cast<int>(charts::State::act), unmet);
   for (const std::string& conflict : view.conflicts)
     standing(look, static_cast<int>(charts::State::act), conflict);
-  for (const std::string& refused : view.refused)
+  for (const std::string& refused : view.refused) {
     standing(look, static_cast<int>(charts::State::stop), refused);
+    note_place(look, "refused");
+  }
   for (std::size_t i = 0; i < view.steps.size(); ++i) draw_step(view.steps[i], static_cast<int>(i), look);
   if (!view.cautions.empty() && ImGui::TreeNodeEx("Handling cautions", ImGuiTreeNodeFlags_DefaultOpen)) {
     for (const std::string& caution : view.cautions) said(look, look.palette.ink, caution);

@@ -3,7 +3,7 @@
 namespace bathwright::desktop {
 namespace {
 
-constexpr float pages_high = 38, rail = 190, strip = 66, status = 22, chemistry = 330;
+constexpr float pages_high = 40, rail = 190, strip = 70, status = 24, chemistry = 330;
 constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoDecoration | ImGuiWindowFlags_NoMove |
                                    ImGuiWindowFlags_NoBringToFrontOnFocus | ImGuiWindowFlags_NoSavedSettings;
 constexpr std::pair<PageName, const char*> pages[] = {
@@ -19,7 +19,7 @@ void draw_pages(const DeskView& view, const Look& look, Intents& out) {
     ImGui::PushFont(open ? look.fonts.bold : look.fonts.body);
     ImGui::PushStyleColor(ImGuiCol_Button, colour(look.palette.page));
     ImGui::PushStyleColor(ImGuiCol_Text, colour(open ? look.palette.accent : look.palette.ink));
-    if (ImGui::Button(words)) out.emplace_back(GoTo{page});
+    if (button(look, words)) out.emplace_back(GoTo{page});
     ImGui::PopStyleColor(2);
     ImGui::PopFont();
     const ImVec2 low = ImGui::GetItemRectMin(), high = ImGui::GetItemRectMax();
@@ -91,7 +91,6 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
   ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {0, 0});
   ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {0, 0});
   ImGui::Begin("desk", nullptr, fixed);
-  ImGui::PopStyleVar();
   const auto panel = [&](const char* name, ImVec2 size, const auto& draw) {
     ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {look.px(12), look.px(8)});
     ImGui::BeginChild(name, size, true);
@@ -110,10 +109,10 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
                 right = with_chemistry ? look.px(chemistry) : 0;
     ImGui::SetCursorPos({0, top});
     panel("line", {left, body}, [&] { draw_line(view.line, look, out); });
-    ImGui::SameLine();
+    ImGui::SameLine(0, 0);
     panel("page", {all.x - left - right, body}, [&] { draw_page(view, state, look, out); });
     if (with_chemistry) {
-      ImGui::SameLine();
+      ImGui::SameLine(0, 0);
       panel("chemistry", {right, body}, [&] { draw_chemistry(view.chemistry, view.source, look, out); });
     }
     panel("shift", {all.x, look.px(strip)}, [&] { draw_shift(view.shift, look, out); });
@@ -125,7 +124,7 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
       quiet(look, words);
   }
   ImGui::End();
-  ImGui::PopStyleVar();
+  ImGui::PopStyleVar(2);
 }
 
 }  // namespace bathwright::desktop

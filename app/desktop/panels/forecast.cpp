@@ -13,13 +13,15 @@ void draw_levers(const ForecastView& view, const Look& look, Intents& out) {
     ImGui::AlignTextToFramePadding();
     ImGui::TextUnformatted(lever.name.c_str());
     ImGui::SameLine(look.px(90));
-    ImGui::SetNextItemWidth(-1);
+    ImGui::SetNextItemWidth(look.px(130));
     double value = lever.value;
-    const std::string form = (lever.high > 20 ? "%.0f " : "%.2f ") + lever.unit;
     ImGui::PushID(static_cast<int>(i));
-    if (ImGui::SliderScalar("##lever", ImGuiDataType_Double, &value, &lever.low, &lever.high, form.c_str()))
+    if (ImGui::SliderScalar("##lever", ImGuiDataType_Double, &value, &lever.low, &lever.high, ""))
       out.emplace_back(MoveLever{static_cast<int>(i), value});
     ImGui::PopID();
+    note_place(look, "lever " + lever.name);
+    ImGui::SameLine();
+    said(look, look.palette.ink, lever.words);
   }
 }
 
@@ -81,9 +83,10 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
   }
   draw_levers(view, look, out);
   if (view.working) {
-    ImGui::ProgressBar(static_cast<float>(view.progress), {look.px(240), 0}, "drawing samples");
+    const std::string words = std::to_string(static_cast<int>(100 * view.progress)) + " % of the samples";
+    ImGui::ProgressBar(static_cast<float>(view.progress), {look.px(240), 0}, words.c_str());
     ImGui::SameLine();
-    if (ImGui::Button("Stop")) out.emplace_back(StopSampling{});
+    if (button(look, "Stop")) out.emplace_back(StopSampling{});
   }
   for (const std::string& fault : view.faults) standing(look, static_cast<int>(charts::State::stop), fault);
   heading(look, "Limits");
@@ -97,11 +100,10 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
   heading(look, "Keep it");
   ImGui::SetNextItemWidth(look.px(230));
   ImGui::InputTextWithHint("##file", "forecast.pdf, .svg or .png", &state.file);
+  note_place(look, "forecast file");
   ImGui::SameLine();
   const bool may_save = !state.file.empty() && !view.charts.empty();
-  ImGui::BeginDisabled(!may_save);
-  if (ImGui::Button("Save the charts") && may_save) out.emplace_back(SaveSheet{Sheet::forecast, state.file});
-  ImGui::EndDisabled();
+  if (button(look, "Save the charts", may_save)) out.emplace_back(SaveSheet{Sheet::forecast, state.file});
   for (const std::string& note : view.notes) quiet(look, note);
   ImGui::EndChild();
   ImGui::SameLine(0, look.px(16));

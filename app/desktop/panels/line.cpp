@@ -10,6 +10,7 @@ void draw_tank(const TankOnLine& tank, int index, bool selected, const Look& loo
   const ImVec2 corner = ImGui::GetCursorPos();
   const float row = look.px(height + 16);
   if (ImGui::Selectable("##open", selected, 0, {0, row})) out.emplace_back(OpenTank{index});
+  note_place(look, "tank " + tank.name);
   ImGui::SetCursorPos({corner.x + look.px(8), corner.y + look.px(8)});
   DrawListCanvas canvas = drawing_room(look, width, height);
   draw_vessel(canvas, {2, 2, width - 4, height - 4}, tank.vessel, look.palette);
@@ -29,8 +30,14 @@ void draw_tank(const TankOnLine& tank, int index, bool selected, const Look& loo
 void draw_line(const LineView& view, const Look& look, Intents& out) {
   quiet(look, view.shop);
   heading(look, "The line");
-  for (std::size_t i = 0; i < view.tanks.size(); ++i)
-    draw_tank(view.tanks[i], static_cast<int>(i), static_cast<int>(i) == view.selected, look, out);
+  int* shown = ImGui::GetStateStorage()->GetIntRef(ImGui::GetID("shown"), -1);
+  for (int i = 0; i < static_cast<int>(view.tanks.size()); ++i) {
+    if (i == view.selected && *shown != i) {
+      ImGui::SetScrollHereY();  // opened by the keys, it may be out of sight
+      *shown = i;
+    }
+    draw_tank(view.tanks[static_cast<std::size_t>(i)], i, i == view.selected, look, out);
+  }
   if (view.tanks.empty()) quiet(look, "No tank files in this folder. Copy one from the demonstration shop.");
 }
 

@@ -39,6 +39,7 @@ void draw_rows(const LogView& view, const Look& look, Intents& out) {
       ImGui::TableNextColumn();
       if (ImGui::Selectable(row.seq.c_str(), row.number == view.shown, ImGuiSelectableFlags_SpanAllColumns))
         out.emplace_back(ShowEntry{row.number});
+      note_place(look, "entry " + row.seq);
       for (const std::string* text : {&row.at, &row.kind, &row.tank, &row.by, &row.words}) {
         ImGui::TableNextColumn();
         ImGui::TextUnformatted(text->c_str());
@@ -57,7 +58,7 @@ void draw_log(const LogView& view, PanelState& state, const Look& look, Intents&
   if (ImGui::InputTextWithHint("##filter", "find in what, by or shift", &state.filter))
     out.emplace_back(FilterLog{state.filter});
   ImGui::SameLine();
-  if (ImGui::Button("Copy the rows")) ImGui::SetClipboardText(rows_as_text(view).c_str());
+  if (button(look, "Copy the rows")) ImGui::SetClipboardText(rows_as_text(view).c_str());
   if (view.rows.empty()) {
     quiet(look, view.filter.empty()
                     ? "Nothing is logged yet: the first analysis or slip that is signed stands here."

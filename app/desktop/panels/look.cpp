@@ -66,14 +66,32 @@ DrawListCanvas drawing_room(const Look& look, float width_at_100, float height_a
   return {*ImGui::GetWindowDrawList(), look.fonts, origin, look.scale};
 }
 
-bool main_button(const Look& look, const char* label, bool ready) {
+void note_place(const Look& look, const std::string& name) {
+  if (!look.places) return;
+  const ImVec2 low = ImGui::GetItemRectMin(), high = ImGui::GetItemRectMax();
+  (*look.places)[name] = {low.x, low.y, high.x, high.y};
+}
+
+void note_window(const Look& look, const std::string& name) {
+  if (!look.places) return;
+  const ImVec2 low = ImGui::GetWindowPos(), size = ImGui::GetWindowSize();
+  (*look.places)[name] = {low.x, low.y, low.x + size.x, low.y + size.y};
+}
+
+bool button(const Look& look, const char* label, bool ready) {
   ImGui::BeginDisabled(!ready);
+  const bool pressed = ImGui::Button(label);
+  ImGui::EndDisabled();
+  note_place(look, label);
+  return pressed && ready;  // a disabled button can still be fired from the keyboard
+}
+
+bool main_button(const Look& look, const char* label, bool ready) {
   ImGui::PushStyleColor(ImGuiCol_Button, colour(look.palette.accent));
   ImGui::PushStyleColor(ImGuiCol_Text, colour(look.palette.card));
-  const bool pressed = ImGui::Button(label);
+  const bool pressed = button(look, label, ready);
   ImGui::PopStyleColor(2);
-  ImGui::EndDisabled();
-  return pressed && ready;  // a disabled button can still be fired from the keyboard
+  return pressed;
 }
 
 }  // namespace bathwright::desktop

@@ -4,6 +4,7 @@
 #include <imgui.h>
 
 #include <bathwright/charts/palette.hpp>
+#include <map>
 #include <string>
 
 #include "../draw/draw_list_canvas.hpp"
@@ -12,10 +13,14 @@
 
 namespace bathwright::desktop {
 
+/// Where things were drawn in this picture, by name: for tests that use mouse and keys as a person does.
+using Places = std::map<std::string, ImVec4>;
+
 struct Look {
   const Fonts& fonts;
   const charts::Palette& palette;
   float scale = 1;
+  Places* places = nullptr;
 
   [[nodiscard]] float px(float at_100) const { return at_100 * scale; }
 };
@@ -33,7 +38,16 @@ void standing(const Look& look, int state, const std::string& word);
 /// Room of this size to draw in; the canvas has its origin at the upper left, lengths at 100 %.
 DrawListCanvas drawing_room(const Look& look, float width_at_100, float height_at_100);
 
-/// The one thing to do next: a button in the accent. Its label may not hold the id of another.
+/// Notes where the last item was drawn, where somebody asks.
+void note_place(const Look& look, const std::string& name);
+
+/// Likewise of the window that is drawn into: a list that is open.
+void note_window(const Look& look, const std::string& name);
+
+/// A button; false while it is not ready, whatever fires it.
+bool button(const Look& look, const char* label, bool ready = true);
+
+/// The one thing to do next: a button in the accent.
 bool main_button(const Look& look, const char* label, bool ready);
 
 }  // namespace bathwright::desktop

@@ -117,12 +117,14 @@ void draw_people(const DeskView& view, PanelState& state, const Look& look, Inte
   heading(look, view.people.empty() ? "Sign up" : "Admit somebody");
   ImGui::SetNextItemWidth(look.px(200));
   ImGui::InputTextWithHint("##new name", "name", &state.new_name);
+  note_place(look, "new name");
   ImGui::SameLine();
   static const std::vector<std::string> roles{"chemist", "operator", "auditor"};
   choose("##role", roles, state.new_role, look);
   ImGui::SameLine();
   ImGui::SetNextItemWidth(look.px(90));
   ImGui::InputTextWithHint("##new pin", "new PIN", &state.new_pin, ImGuiInputTextFlags_Password);
+  note_place(look, "new PIN");
   if (!view.people.empty()) draw_signer(view.sign, state.signer, look);
   const Names names = names_of(view.sign, state.signer);
   const bool may = !view.sign.busy && !state.new_name.empty() && !state.new_pin.empty() &&
@@ -145,11 +147,9 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   ImGui::SetNextItemWidth(look.px(420));
   ImGui::InputTextWithHint("##folder", "another folder of tank files", &state.folder);
   ImGui::SameLine();
-  ImGui::BeginDisabled(state.folder.empty());
-  if (ImGui::Button("Open this folder") && !state.folder.empty()) out.emplace_back(OpenFolder{state.folder});
-  ImGui::EndDisabled();
+  if (button(look, "Open this folder", !state.folder.empty())) out.emplace_back(OpenFolder{state.folder});
   ImGui::SameLine();
-  if (ImGui::Button("Open the demonstration shop")) out.emplace_back(OpenDemonstration{});
+  if (button(look, "Open the demonstration shop")) out.emplace_back(OpenDemonstration{});
   heading(look, "Units that are shown");
   SetUnits chosen{settings.concentration, settings.volume, settings.temperature};
   bool changed = choose("concentrations", settings.concentrations, chosen.concentration, look);
@@ -174,6 +174,7 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   ImGui::SameLine();
   ImGui::SetNextItemWidth(look.px(200));
   ImGui::InputTextWithHint("##zone", "time zone, Europe/Berlin", &state.zone);
+  note_place(look, "zone");
   draw_signer(view.sign, state.signer, look);
   const bool may = !view.sign.busy && !state.zone.empty();
   if (main_button(look, "Set the shifts", may))
@@ -197,9 +198,7 @@ void draw_first_start(const DeskView& view, PanelState& state, const Look& look,
   ImGui::SetNextItemWidth(look.px(420));
   ImGui::InputTextWithHint("##folder", "the folder of your tank files", &state.folder);
   ImGui::SameLine();
-  ImGui::BeginDisabled(state.folder.empty());
-  if (ImGui::Button("Open this folder") && !state.folder.empty()) out.emplace_back(OpenFolder{state.folder});
-  ImGui::EndDisabled();
+  if (button(look, "Open this folder", !state.folder.empty())) out.emplace_back(OpenFolder{state.folder});
   if (!view.fault.empty()) standing(look, static_cast<int>(charts::State::stop), view.fault);
   ImGui::Dummy({0, look.px(12)});
   quiet(

@@ -30,6 +30,9 @@ class ReadingsPanel {
       for (std::size_t i = 0; i < view_.rows.size(); ++i) row(static_cast<int>(i), view_.rows[i]);
       ImGui::EndTable();
     }
+    for (const ReadingRow& reading : view_.rows)
+      if (!reading.fault.empty())
+        standing(look_, static_cast<int>(charts::State::stop), reading.quantity + ": " + reading.fault);
     for (const std::string& fault : view_.faults) said(look_, look_.palette.stop, fault);
     for (const std::string& suspect : view_.suspects) {
       standing(look_, static_cast<int>(charts::State::stop), suspect);
@@ -39,17 +42,20 @@ class ReadingsPanel {
 
  private:
   /// A field whose text is the model's until it is typed in, and goes to the model with every letter.
-  void field(const char* id, int row, Field which, const std::string& text, float width) {
+  void field(const char* id, int row, Field which, const std::string& text, float width,
+             const char* hint = "") {
     const bool mine = typing_.row == row && typing_.field == which;
     std::string shown = mine ? typing_.text : text;
     ImGui::SetNextItemWidth(width);
     ImGui::PushID(row);
-    const bool changed = ImGui::InputText(id, &shown);
+    const bool changed = ImGui::InputTextWithHint(id, hint, &shown, ImGuiInputTextFlags_AutoSelectAll);
     if (ImGui::IsItemActive()) {
       typing_ = {row, which, shown};
     } else if (mine) {
       typing_ = {};
     }
+    note_place(look_, std::string(id + 2) +
+                          (row < 0 ? "" : " " + view_.rows[static_cast<std::size_t>(row)].quantity));
     ImGui::PopID();
     if (changed) out_.emplace_back(TypeReading{row, which, shown});
   }
@@ -63,16 +69,18 @@ class ReadingsPanel {
       ImGui::AlignTextToFramePadding();
       ImGui::TextUnformatted(label.c_str());
       ImGui::SameLine();
-      field(id, -1, which, *text, wide);
+      field(id, -1, which, *text, which == Field::volume ? look_.px(110) : wide,
+            which == Field::volume ? "or 3 cm low" : "");
       ImGui::SameLine(0, look_.px(16));
     }
-    if (ImGui::Button("Undo") && view_.can_undo) out_.emplace_back(UndoTyping{});
+    if (button(look_, "Undo", view_.can_undo)) out_.emplace_back(UndoTyping{});
     ImGui::SameLine();
-    if (ImGui::Button("Redo") && view_.can_redo) out_.emplace_back(RedoTyping{});
+    if (button(look_, "Redo", view_.can_redo)) out_.emplace_back(RedoTyping{});
     ImGui::SameLine(0, look_.px(16));
-    if (ImGui::Button("New sample")) out_.emplace_back(NewSample{});
+    if (button(look_, "New sample")) out_.emplace_back(NewSample{});
     if (ImGui::IsItemHovered()) ImGui::SetTooltip("puts these readings away; Undo brings them back");
-    if (!view_.sampled.empty()) quiet(look_, "first reading typed " + view_.sampled);
+    // Always a line, so that nothing moves under the pointer with the first letter.
+    quiet(look_, view_.sampled.empty() ? "nothing typed yet" : "sample of " + view_.sampled);
   }
 
   void row(int index, const ReadingRow& reading) {
@@ -109,7 +117,7 @@ class ReadingsPanel {
     ImGui::TableNextColumn();
     ImGui::AlignTextToFramePadding();
     if (!reading.fault.empty())
-      said(look_, look_.palette.stop, reading.fault);
+      standing(look_, static_cast<int>(charts::State::stop), "see below");
     else if (reading.result.empty())
       quiet(look_, "not read yet");
     else

@@ -44,7 +44,7 @@ void draw_shift(const ShiftView& view, const Look& look, Intents& out) {
   ImGui::PopStyleColor();
   for (const std::string& open : view.open) {
     ImGui::SameLine(0, look.px(16));
-    standing(look, static_cast<int>(charts::State::act), open + " is open");
+    standing(look, static_cast<int>(charts::State::act), open);
   }
   std::string due;
   constexpr std::size_t most = 4;

@@ -28,7 +28,9 @@ void draw_signer(const SignView& view, SignerState& state, const Look& look) {
                                   ? view.people[static_cast<std::size_t>(chosen)]
                                   : "nobody";
     ImGui::SetNextItemWidth(name_wide);
-    if (!ImGui::BeginCombo(id, shown.c_str())) return;
+    const bool open = ImGui::BeginCombo(id, shown.c_str());
+    note_place(look, id);
+    if (!open) return;
     if (may_be_none && ImGui::Selectable("nobody", chosen < 0)) chosen = -1;
     for (int i = 0; i < static_cast<int>(view.people.size()); ++i)
       if (ImGui::Selectable(view.people[static_cast<std::size_t>(i)].c_str(), i == chosen)) chosen = i;
@@ -38,6 +40,7 @@ void draw_signer(const SignView& view, SignerState& state, const Look& look) {
     ImGui::SameLine();
     ImGui::SetNextItemWidth(pin_wide);
     ImGui::InputTextWithHint(id, "PIN", &text, ImGuiInputTextFlags_Password);
+    note_place(look, id);
   };
   ImGui::AlignTextToFramePadding();
   ImGui::TextUnformatted("signs");
@@ -45,6 +48,7 @@ void draw_signer(const SignView& view, SignerState& state, const Look& look) {
   if (view.people.empty()) {
     ImGui::SetNextItemWidth(name_wide);
     ImGui::InputTextWithHint("##name", view.by.c_str(), &state.name);
+    note_place(look, "signer name");
     ImGui::SameLine();
     quiet(look, "the log has no people yet: nothing is signed with a PIN");
     return;
@@ -75,9 +79,7 @@ void draw_sign(const SignView& view, const AdditionsView& additions, PanelState&
     out.emplace_back(IssueSlip{names});
   ImGui::SameLine(0, look.px(12));
   const bool may_log = may && view.can_log && !view.analysis_logged;
-  ImGui::BeginDisabled(!may_log);
-  if (ImGui::Button("Log the analysis alone") && may_log) out.emplace_back(LogAnalysis{names});
-  ImGui::EndDisabled();
+  if (button(look, "Log the analysis alone", may_log)) out.emplace_back(LogAnalysis{names});
   if (view.can_log && !view.people.empty() && names.pin.empty()) {
     ImGui::SameLine();
     quiet(look, "a PIN is needed");

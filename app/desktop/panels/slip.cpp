@@ -16,9 +16,7 @@ void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, co
   const Names names = names_of(sign, state.signer);
   const bool may = !sign.busy && (sign.people.empty() || !names.pin.empty());
   if (!view.approved_by_second) {
-    ImGui::BeginDisabled(!may);
-    if (ImGui::Button("I have read it and stand for it") && may) out.emplace_back(ApproveSlip{names});
-    ImGui::EndDisabled();
+    if (button(look, "I have read it and stand for it", may)) out.emplace_back(ApproveSlip{names});
   }
   for (const SlipView::Row& step : view.steps) {
     ImGui::PushID(step.step);
@@ -27,6 +25,7 @@ void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, co
     if (ImGui::Checkbox("##done", &done) && may && step.done.empty())
       out.emplace_back(StepDone{step.step, names});
     ImGui::EndDisabled();
+    note_place(look, "step " + std::to_string(step.step));
     ImGui::SameLine();
     bold(look, step.what);
     ImGui::Indent(look.px(32));
@@ -46,12 +45,10 @@ void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, co
   ImGui::InputTextWithHint("##reason", "why the rest is not added", &state.reason);
   ImGui::SameLine();
   const bool may_cancel = may && !state.reason.empty();
-  ImGui::BeginDisabled(!may_cancel);
-  if (ImGui::Button("Cancel the rest") && may_cancel) {
+  if (button(look, "Cancel the rest", may_cancel)) {
     out.emplace_back(CloseSlip{true, state.reason, names});
     state.reason.clear();
   }
-  ImGui::EndDisabled();
   if (sign.busy) quiet(look, "signing ...");
   if (!sign.fault.empty()) standing(look, static_cast<int>(charts::State::stop), sign.fault);
   if (!sign.said.empty()) said(look, look.palette.accent, sign.said);

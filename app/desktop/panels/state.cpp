@@ -7,12 +7,12 @@ void draw_state(const StateView& view, const Look& look) {
   if (!view.from.empty()) quiet(look, view.from);
   if (!ImGui::BeginTable("levels", 5, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] :
-       {std::pair{"component", 1.5F}, {"strip", 2.6F}, {"found", 0.9F}, {"aim", 0.9F}, {"word", 1.6F}})
+       {std::pair{"component", 1.9F}, {"strip", 2.3F}, {"found", 0.8F}, {"then", 0.9F}, {"word", 1.9F}})
     ImGui::TableSetupColumn(name, 0, weight);
   for (const ComponentRow& row : view.rows) {
     ImGui::TableNextRow();
     ImGui::TableNextColumn();
-    ImGui::TextUnformatted(row.name.c_str());
+    said(look, look.palette.ink, row.name);
     ImGui::TableNextColumn();
     const float width = ImGui::GetContentRegionAvail().x / look.scale,
                 height = ImGui::GetTextLineHeight() / look.scale + 2;
@@ -21,11 +21,10 @@ void draw_state(const StateView& view, const Look& look) {
     ImGui::TableNextColumn();
     right_aligned(row.found);
     ImGui::TableNextColumn();
-    ImGui::PushStyleColor(ImGuiCol_Text, colour(look.palette.quiet));
-    ImGui::TextUnformatted((row.unit + ", aim " + row.aim).c_str());
-    ImGui::PopStyleColor();
+    if (!row.predicted.empty()) said(look, look.palette.predicted, "then " + row.predicted);
     ImGui::TableNextColumn();
     standing(look, static_cast<int>(row.state), row.word);
+    quiet(look, row.unit + (row.unit.empty() ? "aim " : ", aim ") + row.aim);
   }
   ImGui::EndTable();
 }

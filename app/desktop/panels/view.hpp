@@ -157,7 +157,7 @@ struct HandOverView {
 };
 
 struct LeverView {
-  std::string name, unit;
+  std::string name, words;  ///< "drag-out", "1.2 times"
   double value = 0, low = 0, high = 1;
 };
 

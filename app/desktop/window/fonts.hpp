@@ -11,8 +11,8 @@ struct Fonts {
   ImFont *caption = nullptr, *body = nullptr, *bold = nullptr, *heading = nullptr, *large = nullptr;
 };
 
-/// Sizes in pixels at a scale of 1.
-inline constexpr float caption_px = 13, body_px = 15, heading_px = 20, large_px = 28;
+/// Heights of a line in pixels at a scale of 1; the letters are three quarters of it.
+inline constexpr float caption_px = 16, body_px = 18, heading_px = 25, large_px = 36;
 
 /// Loads the font into the current ImGui context at a scale (1 to 2). Fails where the font is not installed
 /// and says what to install.

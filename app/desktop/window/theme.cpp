@@ -55,9 +55,9 @@ void set_theme(const charts::Palette& p, float scale) {
   for (const ImGuiCol all :
        {ImGuiCol_ButtonActive, ImGuiCol_FrameBgActive, ImGuiCol_HeaderActive, ImGuiCol_TabActive})
     set(all, pressed);
-  for (const ImGuiCol all :
-       {ImGuiCol_CheckMark, ImGuiCol_SliderGrab, ImGuiCol_SliderGrabActive, ImGuiCol_NavHighlight,
-        ImGuiCol_SeparatorHovered, ImGuiCol_SeparatorActive, ImGuiCol_ScrollbarGrabActive})
+  for (const ImGuiCol all : {ImGuiCol_CheckMark, ImGuiCol_PlotHistogram, ImGuiCol_SliderGrab,
+                             ImGuiCol_SliderGrabActive, ImGuiCol_NavHighlight, ImGuiCol_SeparatorHovered,
+                             ImGuiCol_SeparatorActive, ImGuiCol_ScrollbarGrabActive})
     set(all, p.accent);
   for (const ImGuiCol all : {ImGuiCol_Text}) set(all, p.ink);
   for (const ImGuiCol all : {ImGuiCol_TextDisabled, ImGuiCol_ScrollbarGrabHovered}) set(all, p.quiet);

@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <bathwright/sheets/analysis_sheet.hpp>
+#include <bathwright/sheets/chance.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/tank_parts.hpp>
 #include <bathwright/units/show.hpp>
@@ -10,6 +11,11 @@ namespace bathwright::sheets::slip {
 namespace {
 
 constexpr double coverage = 2;  // standard uncertainties: about 95 %
+
+/// "263.4 ± 4.2"
+std::string with_uncertainty(double value, const std::optional<double>& u, int decimals) {
+  return fixed(value, decimals) + (u ? " ± " + fixed(*u, decimals) : "");
+}
 
 std::optional<double> uncertainty(const analysis::Analysis& analysis, const std::string& quantity) {
   for (const auto& level : analysis.results)
@@ -55,17 +61,9 @@ Section levels(const AdditionSlip& slip) {
   const bool doses = plan && !plan->additions.empty();
   const auto end = doses ? judge(slip.tank, slip.type, plan->final_view.quantity_g_per_L, plan->final_view.pH)
                          : std::vector<Judged>{};
-  std::vector<Column> heads{{"g/L, or pH"},
-                            {"low", Align::number},
-                            {"aim", Align::number},
-                            {"high", Align::number},
-                            {"found", Align::number},
-                            {"± 2u", Align::number},
-                            {"state"}};
-  if (doses) {
-    heads.push_back({"expected", Align::number});
-    heads.push_back({"± 2u", Align::number});
-  }
+  std::vector<Column> heads{{"g/L, or pH"},          {"low", Align::number},        {"aim", Align::number},
+                            {"high", Align::number}, {"found ± 2u", Align::number}, {"state"}};
+  if (doses) heads.push_back({"expected ± 2u", Align::number});
   Table table(std::move(heads));
   for (std::size_t i = 0; i < now.size(); ++i) {
     const Judged& one = now[i];
@@ -75,14 +73,13 @@ Section levels(const AdditionSlip& slip) {
                                  fixed(one.aim->low, decimals),
                                  fixed(one.aim->aim, decimals),
                                  fixed(one.aim->high, decimals),
-                                 fixed(one.found, decimals),
-                                 u ? fixed(*u, decimals) : "",
+                                 with_uncertainty(one.found, u, decimals),
                                  std::string(words(one.standing))};
     if (doses) {
       // What was uncertain of the amounts stays so; additions count as exact.
       const double share = slip.analysis.volume.v / plan->final_view.volume_L;
-      row.push_back(fixed(end[i].found, decimals));
-      row.push_back(u ? fixed(*u * share, decimals) : "");
+      const auto u_end = u ? std::optional(*u * share) : std::nullopt;
+      row.push_back(with_uncertainty(end[i].found, u_end, decimals));
     }
     table.add(std::move(row));
   }
@@ -96,12 +93,10 @@ Section levels(const AdditionSlip& slip) {
     section.blocks.push_back(Paragraph{"At " + units::show(slip.tank.temperature, "degC", 3) +
                                        ", for which the steps are worked out, the pH is " +
                                        fixed(slip.sheet.now.pH, 2) + "."});
-  return section;
-}
-
-Section notes(const AdditionSlip& slip) {
-  Section section{"Notes on the analysis", {}};
-  for (const std::string& note : slip.analysis.notes) section.blocks.push_back(Paragraph{note});
+  if (plan)
+    for (const std::string& words :
+         {chance_of_ending_inside(slip.type, *plan), chance_of_staying_dissolved(slip.tank, *plan)})
+      if (!words.empty()) section.blocks.push_back(Paragraph{words});
   return section;
 }
 

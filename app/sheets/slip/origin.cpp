@@ -1,5 +1,4 @@
 #include <algorithm>
-#include <bathwright/sheets/cautions.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/units/show.hpp>
 
@@ -74,7 +73,6 @@ Section origin(const AdditionSlip& slip) {
       if (!methods(slip.readings, level.quantity).empty())
         fields.push_back({fields.size() == 3 ? "Found" : "", analysed(slip.readings, level)});
   Section section;
-  section.blocks.emplace_back(Paragraph{std::string(deferral)});
   section.blocks.emplace_back(std::move(fields));
   return section;
 }

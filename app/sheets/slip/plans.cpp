@@ -1,34 +1,47 @@
-#include <bathwright/sheets/chance.hpp>
+#include <algorithm>
 #include <bathwright/sheets/names.hpp>
 
 #include "parts.hpp"
 
 namespace bathwright::sheets::slip {
 
-Section promise(const AdditionSlip& slip, const dosing::Plan& plan) {
-  Section section{"How sure", {}};
-  for (const std::string& words :
-       {chance_of_ending_inside(slip.type, plan), chance_of_staying_dissolved(slip.tank, plan)})
-    if (!words.empty()) section.blocks.push_back(Paragraph{words});
-  return section;
+namespace {
+
+std::string waiting(const dosing::Wait& wait) {
+  return "Wait, nothing to add: the work " + std::string(wait.takes ? "takes " : "brings ") + wait.label +
+         " (" + wait.use + "), about " + figure(wait.units, 2) + " " + wait.unit +
+         " to its aim, at the rates of the bath type.";
 }
+
+/// What does not go in today.
+std::string later(const dosing::Rest& rest) {
+  const auto& what = rest.addition;
+  return "The rest next shift, once " + figure(rest.evaporate_L, 2) +
+         " L have evaporated: " + measured(what.amount, what.unit) + " " + what.name + ".";
+}
+
+}  // namespace
 
 Section not_at_its_aim(const dosing::Plan& plan) {
   Section section{"Not at its aim", {}};
   for (const auto* said : {&plan.unmet, &plan.left_alone})
     for (const std::string& words : *said) section.blocks.push_back(Paragraph{words});
+  for (const dosing::Rest& rest : plan.rest) section.blocks.push_back(Paragraph{later(rest)});
+  for (const dosing::Wait& wait : plan.waits) section.blocks.push_back(Paragraph{waiting(wait)});
   for (const std::string& conflict : plan.conflicts) section.blocks.push_back(Paragraph{"Why: " + conflict});
   return section;
 }
 
 Section other_plans(const AdditionSlip& slip) {
   Section section{"Other plans", {}};
+  if (slip.signature.slip) return section;  // somebody has chosen
   for (std::size_t i = 1; i < slip.sheet.plans.size(); ++i) {
     const dosing::Plan& plan = slip.sheet.plans[i];
     std::string what;
     if (plan.decant_L > 0) what = "take out " + figure(plan.decant_L, 3) + " L";
     for (const auto& addition : plan.additions)
-      what += (what.empty() ? "" : ", ") + measured(addition.amount, addition.unit) + " " + addition.name;
+      if (addition.chemical != "water")
+        what += (what.empty() ? "" : ", ") + measured(addition.amount, addition.unit) + " " + addition.name;
     section.blocks.push_back(Paragraph{plan.kind + ", " + money(plan.cost, slip.tank) + ": " + plan.reason +
                                        (plan.feasible ? "" : ". Not to be carried out as it stands") + ". " +
                                        (what.empty() ? "Nothing goes in." : "In all: " + what + ".")});

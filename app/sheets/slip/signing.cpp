@@ -1,4 +1,5 @@
 #include <algorithm>
+#include <bathwright/sheets/cautions.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <cmath>
 
@@ -40,7 +41,6 @@ Section signing(const AdditionSlip& slip) {
   std::string prepared = by.prepared_by;
   if (!by.issued.empty()) prepared += ", " + by.issued;
   if (!by.shift.empty()) prepared += ", shift " + by.shift;
-  prepared += ", with " + by.program;
   SignatureLines lines{{"prepared", prepared}, {"approved", by.approved_by}};
   if (doses) {
     lines.push_back({"carried out", ""});
@@ -51,6 +51,7 @@ Section signing(const AdditionSlip& slip) {
     lines.push_back({"nonconformance", ""});
   }
   section.blocks.push_back(std::move(lines));
+  section.blocks.push_back(Paragraph{std::string(deferral) + " Computed with " + by.program + "."});
   return section;
 }
 

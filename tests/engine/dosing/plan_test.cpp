@@ -1,8 +1,10 @@
+#include <bathwright/dosing/check_plan.hpp>
 #include <bathwright/dosing/plan.hpp>
 #include <bathwright/matter/water.hpp>
 #include <cmath>
 #include <random>
 
+#include "../../support/bath_type_named.hpp"
 #include "../../support/demo_tank.hpp"
 
 using namespace bathwright;
@@ -396,9 +398,31 @@ TEST_CASE("bath is taken out where adding alone cannot help", "[unit][dosing]") 
     const dosing::Plan& with_decant = plan_of(plans, "with decant");
     CHECK(with_decant.decant_L > 10);
     CHECK(with_decant.unmet.empty());
+    const dosing::Step& first = with_decant.steps.front();
+    CHECK(first.number == 1);
+    CHECK(first.takes_out);
+    CHECK(first.amount == with_decant.decant_L);
+    CHECK(first.predicted.volume_L == Approx(2400 - with_decant.decant_L).margin(0.1).epsilon(0));
+    CHECK(with_decant.steps[1].number == 2);
+    // Without it the rest waits for room: 45 g/L of the sulfate are missing.
+    const dosing::Plan& full = plan_of(plans, "least cost");
+    REQUIRE_FALSE(full.rest.empty());
+    double sulfate = kg_of(full, "nickel-sulfate");
+    for (const dosing::Rest& rest : full.rest) {
+      CHECK(rest.evaporate_L > 20);
+      if (rest.addition.chemical == "nickel-sulfate") sulfate += rest.addition.kg;
+    }
+    CHECK(sulfate == Approx(45 * 2.4 / 0.99).epsilon(0.03));  // ends between the mark and the brim
   }
-  SECTION("not for what stands inside its window") {
+  SECTION("for what stands strong inside its window only where that is asked for") {
     CHECK_FALSE(offers(planned(demo::state(295, 50, 42)).plans, "with decant"));
+    const auto plans = planned(demo::state(295, 50, 42), demo::tank(), {.bring_down = true}).plans;
+    CHECK(plans.front().decant_L == 0);
+    const dosing::Plan& down = plan_of(plans, "with decant");
+    CHECK(down.feasible);
+    CHECK(down.unmet.empty());
+    CHECK(down.decant_L == Approx(2400 * 15 / 295.0).margin(3).epsilon(0));  // 280/295 of it stays
+    CHECK(demo::level(down.final_view, "NiSO4.6H2O") == Approx(280).epsilon(1e-3));
   }
 }
 
@@ -416,10 +440,21 @@ TEST_CASE("plans that differ in kind are offered beside the cheapest", "[unit][d
   SECTION("whole bags, inside every window") {
     const dosing::Plan& bags = plan_of(planned(demo::state(240, 41, 40, 4.2, 2300)).plans, "whole bags");
     CHECK(bags.feasible);
-    for (const char* id : {"nickel-sulfate", "nickel-chloride", "boric-acid", "nickel-carbonate"}) {
+    for (const char* id : {"nickel-sulfate", "nickel-chloride"}) {
       const double in_bags = kg_of(bags, id) / *demo::tank().on_shelf(id)->package;
       INFO(id << " " << kg_of(bags, id));
       CHECK(in_bags == Approx(std::round(in_bags)).margin(1e-9).epsilon(0));
+    }
+    // A bag of boric acid is 10.4 g/L, its window 7 g/L wide.
+    CHECK(std::fmod(kg_of(bags, "boric-acid"), 25) != 0);
+    CHECK_THAT(bags.reason, Catch::Contains("boric acid: a bag of it is more than its window is wide"));
+  }
+  SECTION("no bag that only water over the mark could make up for") {
+    // 56 kg of sulfate, 7.7 of chloride and 14.4 of boric acid are missing this morning.
+    for (const dosing::Plan& plan : plans) {
+      INFO(plan.kind);
+      CHECK(plan.final_view.volume_L < 2401);
+      CHECK(plan.cost <= 1.02 * (3 * 25 * 5.10 + 25 * 7.40 + 14.4 * 1.90 + 1.2));
     }
   }
   SECTION("in every plan, where the shop opens no bag twice") {
@@ -456,4 +491,82 @@ TEST_CASE("plans that differ in kind are offered beside the cheapest", "[unit][d
     // A tenth of the window inside: 225 + 7.5 g/L.
     CHECK(demo::level(least.final_view, "NiSO4.6H2O") == Approx(232.5).epsilon(2e-3));
   }
+}
+
+TEST_CASE("additions leave everything dissolved when the tank cools", "[unit][dosing]") {
+  // At 18 degC about 29 g/L of boric acid stay dissolved beside the aims of the salts; these aims respect it.
+  bath::Tank tank = demo::tank();
+  for (bath::Aim& aim : tank.aims)
+    if (aim.quantity == "H3BO3") aim.aim = 27, aim.low = 24, aim.high = 40;
+  const auto idle_room = [](const bath::TankView& view) {
+    for (const bath::Headroom& room : view.headroom)
+      if (room.solid == "H3BO3") return room.idle_log10;
+    return 0.0;
+  };
+  SECTION("stopping short of an aim inside its window") {
+    const bath::TankState now = demo::state(235, 50, 30.7);
+    const auto sheet = planned(now, tank);
+    CHECK(idle_room(sheet.now) > 0);
+    const dosing::Plan& plan = sheet.plans.front();
+    INFO((plan.unmet.empty() ? "" : plan.unmet.front()));
+    CHECK(plan.feasible);
+    CHECK(idle_room(plan.final_view) == Approx(0).margin(0.005));
+    CHECK(demo::level(plan.final_view, "NiSO4.6H2O") < 275);
+    REQUIRE_FALSE(plan.unmet.empty());
+    CHECK_THAT(plan.unmet.front(), Catch::Contains("held back to keep H3BO3 dissolved at 18.0 degC"));
+  }
+  SECTION("or saying which windows forbid it, and stopping") {
+    tank.freeboard = {20};  // no room to thin the sulfate, which salts the acid out
+    for (bath::Aim& aim : tank.aims) {
+      if (aim.quantity == "NiSO4.6H2O") aim.high = 420;
+      if (aim.quantity == "H3BO3") aim.aim = 28.5, aim.low = 28;
+    }
+    const auto plans = planned(demo::state(400, 50, 24), tank).plans;
+    const dosing::Plan& plan = plan_of(plans, "least cost");
+    CHECK_FALSE(plan.feasible);
+    REQUIRE_FALSE(plan.conflicts.empty());
+    CHECK_THAT(plan.conflicts.front(), Catch::Contains("boric acid at least 28"));
+    CHECK_THAT(plan.conflicts.front(), Catch::Contains("H3BO3 dissolved at 18.0 degC"));
+    CHECK(plan_of(plans, "with decant").feasible);
+  }
+  SECTION("in somebody's own list too") {
+    const auto listed = [&](double kg) {
+      return must(dosing::check_plan(tank, demo::chemistry(), demo::state(280, 50, 27),
+                                     {{demo::stock("boric-acid"), kg}}))
+          .plans.front();
+    };
+    CHECK(listed(1).feasible);
+    CHECK_FALSE(listed(20).feasible);
+  }
+  SECTION("but not beyond what the aims themselves do") {
+    // 42 g/L of boric acid flakes at 18 degC whoever weighs it out: a person has decided that.
+    CHECK(idle_room(planned(morning()).now) < 0);
+    CHECK(planned(demo::state(280, 50, 28)).plans.front().unmet.empty());
+  }
+}
+
+TEST_CASE("what the waits keep out of this shift is for the next", "[unit][dosing]") {
+  // 22 g/L of boric acid in rises of 5 g/L, two hours after each: the fifth begins after eight.
+  const dosing::Plan plan = planned(demo::state(280, 50, 20)).plans.front();
+  int first = 0, next = 0;
+  for (const dosing::Step& step : plan.steps)
+    if (step.chemical == "boric-acid") ++(step.shift == 0 ? first : next);
+  CHECK(first == 4);
+  CHECK(next == 1);
+}
+
+TEST_CASE("a strong metal that the work plates out is waited for", "[unit][dosing]") {
+  const bath::Tank tank =
+      must(shopfiles::read_tank(PROJECT_DIR "/baths/z-02.toml", matter::StockCatalogue::built_in()));
+  const bath::Chemistry zinc = must(
+      bath::Chemistry::prepare(bath_type_named(tank.bath_type), tank.temperature, tank.idle_temperature));
+  const bath::TankState strong = must(zinc.state_from({{"Zn^2+", 13.8}, {"NaOH", 125}, {"Na2CO3", 40}}, {},
+                                                      tank.working_volume, tank.temperature));
+  const dosing::Plan plan = must(dosing::plan_additions(tank, zinc, strong)).plans.front();
+  REQUIRE(plan.waits.size() == 1);
+  CHECK(plan.waits.front().quantity == "Zn^2+");
+  CHECK(plan.waits.front().takes);
+  CHECK(plan.waits.front().unit == "Ah");
+  // 1.8 g/L in 5000 L; 1.2196 g/Ah (65.38 x 3600 / 2 / 96485) at 72 % of the current, inert anodes.
+  CHECK(plan.waits.front().units == Approx(1.8 * 5000 / (1.2196 * 0.72)).epsilon(1e-3));
 }

@@ -212,3 +212,98 @@ TEST_CASE("the day of the policy as it stands is not the median of the samples",
   CHECK(*sampled.day_p05 < *sampled.day);
   CHECK(*sampled.day_p95 > *sampled.day);
 }
+
+TEST_CASE("what no bleed can hold is told, and the reason", "[failure][forecast]") {
+  Anodizer shop;  // what fills it up brings more than the limit
+  shop.policy.work.clear();
+  shop.policy.water_g_per_L = {{"Al^3+", 13}};
+  const auto bleed = shop.ready().bleed_to_hold(shop.start, "Al^3+", 12);
+  REQUIRE_FALSE(bleed);
+  CHECK(bleed.problems().front().kind == Fault::not_converged);
+  CHECK(text(bleed.problems()).find("no bleed holds it") != std::string::npos);
+}
+
+TEST_CASE("a level that only freezing out takes down settles where it leaves it", "[reference][forecast]") {
+  // Chilled every night: c' = c - (v/V)(c - left) tends to what is left (scenario of the trade: a third to
+  // 40 g/L). Crystals take water with them, which is filled up again.
+  Anodizer shop;
+  shop.policy.work.clear();
+  shop.policy.area_m2_per_shift = {};
+  shop.policy.freeze_outs = {{"Al^3+", "Al2(SO4)3.18H2O", 1, 2000, 4}};
+  const auto settled = must(shop.ready().steady_state(shop.start));
+  REQUIRE(settled);
+  CHECK((*settled)[0] == Approx(4).epsilon(1e-6));
+  CHECK_FALSE(must(shop.ready().bleed_to_hold(shop.start, "Al^3+", 5)));
+}
+
+TEST_CASE("a bleed at work takes no more a week than its days", "[unit][forecast]") {
+  Anodizer shop;
+  shop.policy.work.clear();
+  shop.policy.area_m2_per_shift = {};
+  shop.policy.calendar = {2, 8, 5, 0, {}};
+  shop.policy.bleed_L_per_day = 80;
+  shop.policy.bleed_at_work = true;
+  shop.policy.horizon_days = 7;
+  const auto run = must(shop.ready().run(shop.start));
+  CHECK(run.days[5].waste_L == Approx(400));
+  CHECK(run.days[7].waste_L == Approx(400));
+  CHECK(level(run, 5, 0) / level(run, 0, 0) == Approx(std::exp(-400 / 8000.0)).epsilon(1e-9));
+}
+
+TEST_CASE("inputs that were learned together are drawn together", "[unit][forecast]") {
+  // Work and effects only count as their product: opposite to each other they leave nothing to chance.
+  Anodizer shop;
+  shop.policy.area_m2_per_shift = {};
+  shop.policy.work.front().per_shift.u_rel = 0.1;
+  Forecast::Sampling sampling;
+  sampling.samples = 200;
+  sampling.u_level_rel = 0;
+  const auto width = [&] {
+    const auto bands = must(shop.ready().sample(shop.start, sampling));
+    return bands.quantity[0].p95.back() - bands.quantity[0].p05.back();
+  };
+  const double apart = width();
+  shop.policy.correlations = {{"work, anodizing", "effects of anodizing", -0.999}};
+  CHECK(width() < 0.1 * apart);
+  shop.policy.correlations = {{"work, anodizing", "effects of anodizing", 0.999}};
+  CHECK(width() == Approx(std::sqrt(2.0) * apart).epsilon(0.15));
+  shop.policy.correlations = {{"work, anodizing", "weather", 0.5}};
+  CHECK_FALSE(Forecast::prepare(shop.tank, shop.chemistry, shop.policy));
+}
+
+TEST_CASE("what was put in at a shift's end does not lift the aims", "[unit][forecast]") {
+  // A feed that brings water stands above the mark until water is held back: the level is that of the mark.
+  Anodizer shop;
+  shop.tank.aims = {{"H2SO4", 180, 165, 200}};
+  shop.tank.shelf = {shelf("sulfuric-acid", 1), shelf("sulfuric-acid-35", 1)};
+  shop.policy.bleed_L_per_day = 400;
+  auto by_hand = rule_of("sulfuric-acid-35", Replenishment::By::turnover, 0);
+  by_hand.by = Replenishment::By::analysis;
+  by_hand.quantity = "H2SO4";
+  by_hand.to = 170;
+  auto later = by_hand;
+  later.stock = "sulfuric-acid";
+  later.to = 180;
+  shop.policy.calendar = {1, 24, 7, 0, {}};
+  by_hand.every_shifts = 1;
+  shop.policy.replenishment = {by_hand, later};
+  const auto run = must(shop.ready().run(shop.start));
+  CHECK(run.days[3].volume_L == Approx(8000).epsilon(1e-9));
+  CHECK(level(run, 3, 1) == Approx(180).epsilon(1e-9));
+}
+
+TEST_CASE("where the model has left its range nothing is judged, and the day is told", "[unit][forecast]") {
+  Anodizer shop;
+  shop.type.max_ionic_strength = 3;  // told twice of it
+  shop.chemistry = must(bath::Chemistry::prepare(shop.type, {25}, {25}));
+  shop.policy.area_m2_per_shift = {};
+  shop.policy.horizon_days = 120;
+  const auto run = must(shop.ready().run(shop.start));
+  REQUIRE(run.beyond);
+  CHECK(run.beyond->day > 0);
+  const auto& first = run.days[static_cast<std::size_t>(run.beyond->day)];
+  CHECK(std::isnan(first.pH));
+  CHECK_FALSE(std::isnan(run.days[static_cast<std::size_t>(run.beyond->day) - 1].pH));
+  CHECK(std::isnan(run.days.back().pH));
+  CHECK(run.days.back().quantity_g_per_L[0] > first.quantity_g_per_L[0]);  // amounts go on
+}

@@ -75,7 +75,7 @@ TEST_CASE("a hand-over tells what its shift logged, left open and found out of i
   CHECK(told.shift.label == "2026-03-02 night");
   CHECK(told.entries.size() == 2);
   REQUIRE(told.open_slips.size() == 1);
-  CHECK(told.open_slips[0].seq == slip_seq);
+  CHECK(told.open_slips[0].slip.seq == slip_seq);
   REQUIRE(told.out_of_window.size() == 1);
   CHECK(told.out_of_window[0].quantity == "Ni^2+");
   CHECK(told.out_of_window[0].found == 66);

@@ -45,6 +45,11 @@ working = "72 L/d"
 brings = { "Al^3+" = "40 mg/L" }
 [bleed]
 rate = "2 L/h"
+at_work = true
+[[correlated]]
+one = "drag-out"
+other = "work, anodizing"
+correlation = -0.4
 [[replenish]]
 chemical = "sulfuric-acid"
 use = "anodizing"
@@ -71,6 +76,11 @@ volume = "0.5 m3"
   CHECK(policy->evaporation_L_per_h.value == Approx(3));
   CHECK(policy->water_g_per_L.at("Al^3+") == Approx(0.04));
   CHECK(policy->bleed_L_per_day == Approx(48));
+  CHECK(policy->bleed_L_per_h(true) == Approx(3));  // in 16 h of work
+  CHECK(policy->bleed_L_per_h(false) == 0);
+  REQUIRE(policy->correlations.size() == 1);
+  CHECK(policy->correlations[0].other == "work, anodizing");
+  CHECK(policy->correlations[0].correlation == -0.4);
   REQUIRE(policy->replenishment.size() == 1);
   CHECK(policy->replenishment[0].kg_per_unit == Approx(0.0006));
   CHECK(policy->decants.at(0).litres == Approx(500));

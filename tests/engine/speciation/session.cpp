@@ -151,6 +151,41 @@ TEST_CASE("variants solved side by side are those solved one by one", "[property
   });
 }
 
+TEST_CASE("variants that move are followed from their own last answers", "[property]") {
+  each_bath([](const BathSystem& bath, const Solver& solver) {
+    std::mt19937 random(23);
+    Task task = near_usual(bath, solver.system(), 1, random);
+    std::vector<Variant> variants;
+    for (int n = 0; n < 19; ++n)
+      variants.push_back({near_usual(bath, solver.system(), 1.2, random).component_mol, solver.ln_K()});
+    Session together(solver), alone(solver);
+    for (int round = 0; round < 4; ++round) {
+      if (round == 2) variants.erase(variants.begin() + 3);  // the others change places
+      for (Variant& variant : variants)
+        for (std::size_t i = 1; i < variant.component_mol.size(); ++i)
+          variant.component_mol[i] *= 1 + 0.01 * static_cast<double>(i % 3);
+      task.water_kg *= 1.001;
+      std::size_t seen = 0;
+      const Outcome done = together.solve_variants_near_last(
+          task, variants, [&](std::size_t n, const Outcome& solved, const Equilibrium& found) {
+            INFO("round " << round << ", variant " << n);
+            CHECK(n == seen++);
+            REQUIRE(solved);
+            Task one = task;
+            one.component_mol = variants[n].component_mol;
+            Equilibrium expected;
+            REQUIRE(alone.solve(one, expected));
+            CHECK(found.residuals.mass_balance < 1e-12);
+            if (!expected.stable || !found.stable) return;  // another equilibrium may be near
+            for (std::size_t j = 0; j < found.molality.size(); ++j)
+              CHECK(found.molality[j] == Approx(expected.molality[j]).margin(1e-250).epsilon(1e-8));
+          });
+      CHECK(done);
+      CHECK(seen == variants.size());
+    }
+  });
+}
+
 TEST_CASE("a variant may hold another pH than the task", "[property]") {
   const Solver solver = solver_of({"SO4^2-", "Na^+", "H3BO3"});
   Task task = task_of(solver.system(), {{"Na^+", 2}, {"SO4^2-", 1}, {"H3BO3", 0.6}});

@@ -8,10 +8,11 @@ namespace bathwright::sheets {
 
 /// What a limit needs to be held.
 struct BleedToHold {
-  std::string limit;          ///< "aluminium at 15.00 g/L"
-  double litres_per_day = 0;  ///< to bleed beyond the policy's own
-  /// Times the policy's work that its own bleed can carry; nothing: any.
+  std::string limit;                     ///< "aluminium at 15.00 g/L"
+  std::optional<double> litres_per_day;  ///< to bleed beyond the policy's own; nothing: `why_no_bleed`
+  /// Times the policy's work that its own bleed can carry; nothing: any, or `why_no_load`.
   std::optional<double> load;
+  std::string why_no_bleed, why_no_load;
 };
 
 /// A policy beside others.

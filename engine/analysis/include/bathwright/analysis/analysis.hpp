@@ -45,8 +45,8 @@ struct Analysis {
       expected;           ///< what the book had before the readings, as `reconciled`; without it empty
   Misfit misfit;          ///< of readings and book
   bath::TankState state;  ///< of the reconciled levels
-  /// Covariance of state.component_mol, in the order of Chemistry::components, and last of the volume, mol and
-  /// L: row after row. H^+ that follows from the pH counts as exact; the counter-ion keeps the charges
+  /// Covariance of state.component_mol, in the order of Chemistry::components, and last of the volume, mol
+  /// and L: row after row. H^+ that follows from the pH counts as exact; the counter-ion keeps the charges
   /// balanced.
   std::vector<double> covariance;
   units::KilogramsPerLitre density_predicted;
@@ -60,6 +60,7 @@ struct Analysis {
   /// Of every titration whose flask can be computed: where its indicator changes. Told in a note where it
   /// makes more than half a standard uncertainty; no level is changed for it.
   std::vector<EndPointBias> end_points{};
+  std::vector<EndPointUnknown> end_points_unknown{};
 };
 
 /// Levels known from the last logged analysis of the tank, g/L by quantity id; what nobody titrated today is

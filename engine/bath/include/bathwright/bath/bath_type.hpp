@@ -5,6 +5,7 @@
 
 #include <bathwright/activity/make_model.hpp>
 #include <bathwright/matter/formula.hpp>
+#include <bathwright/matter/stock.hpp>
 #include <bathwright/speciation/equilibria.hpp>
 #include <cstdint>
 #include <functional>
@@ -45,6 +46,8 @@ struct Quantity {
   /// make up: NiCl2.6H2O = 1/2 Cl^-;  NiSO4.6H2O = Ni^2+ - 1/2 Cl^-.
   speciation::Composition counts;
   bool salt_view = false;  ///< another way to state components that are quantities of their own
+  /// A by-product of the work or a contaminant: its aim is what it may come to, and nobody adds it.
+  bool unwanted = false;
 };
 
 /// Limits in g/L (or pH units, degC, A/dm2). NaN: open.
@@ -150,6 +153,9 @@ struct BathType {
   std::vector<Use> uses;
 
   [[nodiscard]] const Quantity* quantity(std::string_view id) const;  ///< nullptr if there is none
+  /// The rule of addition of a chemical, of a liquid that of another strength where it has none of its own;
+  /// nullptr where there is neither.
+  [[nodiscard]] const AdditionRule* addition_rule(const matter::StockChemical& stock) const;
   [[nodiscard]] bool acid_by_pH() const;  ///< H^+ follows from the pH, not from an analysis or the charges
 };
 

@@ -18,6 +18,7 @@ struct Sample {
 struct FromLog {
   analysis::Book book;
   std::int64_t entry = 0;  ///< the entry it starts from
+  double hours = 0;        ///< from its sample on
   std::vector<std::string>
       after_sample;  ///< additions and dumps that the sample knows nothing of, a sentence each
 };

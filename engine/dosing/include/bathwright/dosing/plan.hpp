@@ -25,9 +25,11 @@ struct Addition {
   double cost = 0;    ///< in the tank's currency
 };
 
-/// One portion carried to the tank.
+/// One portion carried to the tank, or bath taken out before the first.
 struct Step {
   int number = 0;
+  bool takes_out = false;  ///< `amount` L of bath to the waste treatment, no chemical
+  int shift = 0;           ///< 1: the waits before it fill a shift, it is for the next; and so on
   std::string chemical, name, unit;
   double amount = 0, kg = 0;
   int portion = 1, portions = 1;        ///< "2 of 3"
@@ -53,6 +55,21 @@ struct Removal {
   double first_kg = 0;          ///< to begin with; then the tank is analysed again
 };
 
+/// What no longer goes in because the tank is full.
+struct Rest {
+  Addition addition;
+  double evaporate_L = 0;  ///< that must go first
+};
+
+/// A level off its aim that the work itself brings there.
+struct Wait {
+  std::string quantity, label;
+  std::string use;    ///< "deposition"
+  double units = 0;   ///< of the use until the level is at its aim
+  std::string unit;   ///< "Ah", "m2", "g", "h"
+  bool takes = true;  ///< the work takes it out; false: brings it
+};
+
 struct Plan {
   std::string kind;       ///< "least cost"
   std::string reason;     ///< what sets it apart from the others: "cheapest of those that reach every aim"
@@ -69,6 +86,8 @@ struct Plan {
   std::vector<std::string>
       unmet;  ///< aims that cannot be reached with this shelf, by how much, whether inside
   std::vector<std::string> left_alone;  ///< what lies inside the noise of its analysis and is not corrected
+  std::vector<Rest> rest;               ///< for when there is room
+  std::vector<Wait> waits;              ///< of what ends off its aim
   std::vector<Removal> removals;        ///< once the plan is carried out, mixed and analysed; no step of it
   std::vector<std::string> conflicts;   ///< why windows cannot be met: the limits in each other's way
   std::vector<std::string> keep_apart;  ///< its chemicals that must not meet outside the tank, and why
@@ -89,9 +108,10 @@ struct AdditionSheet {
 struct Request {
   /// One standard uncertainty of the present level, g/L by quantity id; may be empty.
   std::map<std::string, double> uncertainty = {};
-  bool dead_band = true;              ///< false: to the aim, however near the tank is already
-  bool weighable = true;              ///< amounts as a shop's scales and jugs show them; false: unrounded
-  int most_plans = 4;                 ///< at least 1
+  bool dead_band = true;    ///< false: to the aim, however near the tank is already
+  bool bring_down = false;  ///< what is strong inside its window comes to its aim by taking bath out
+  bool weighable = true;    ///< amounts as a shop's scales and jugs show them; false: unrounded
+  int most_plans = 4;       ///< at least 1
   std::optional<Spread> spread = {};  ///< given: how sure each plan is to end inside every window
   Sampling sampling = {};             ///< of that
 };

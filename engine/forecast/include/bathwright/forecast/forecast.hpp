@@ -16,13 +16,22 @@ struct Draw {
   std::vector<double> effects;     ///< per use of the bath type: on its effects
   std::vector<double> efficiency;  ///< per use: on the cathode efficiency, which stays within 0 to 1
   std::vector<double> anode;       ///< per use: on the anode efficiency
-  std::vector<double> level;       ///< per component: on the amount at the start
+  std::vector<double> level;       ///< per quantity that is no salt view: on its level at the start
+};
+
+/// Where the model stopped describing the solution.
+enum class Beyond : std::uint8_t {
+  no,
+  curvature,       ///< its Gibbs energy no longer curves upward
+  ionic_strength,  ///< more than twice what the bath type was made for, or the model is trusted to
+  solid            ///< a solid that forms readily is more than a hundred times beyond its saturation
 };
 
 /// What a forecast says of one day: the state at its end.
 struct Day {
   int day = 0;                           ///< 0 is the start
   std::vector<double> quantity_g_per_L;  ///< in the order of BathType::quantities
+  Beyond beyond = Beyond::no;  ///< else, and on every later day, neither pH nor headroom is told (NaN)
   double pH = 0;
   std::vector<double> working_log10, idle_log10;  ///< headroom, in the order of BathType::solids; NaN: none
   double volume_L = 0;                            ///< the mark, unless what was put in stands above it
@@ -73,9 +82,17 @@ struct Rinsed {
 /// what was, less everything put in, plus everything taken out; relative to the largest of these.
 using Balance = std::map<std::string, double>;
 
+/// From which day on something holds, and why.
+struct FromDay {
+  int day = 0;
+  std::string why;
+};
+
 struct Run {
-  std::vector<Day> days;  ///< to the horizon, or to where it ended
-  Problems ended;         ///< why it ended before, with the day: no room for the salts, no equilibrium
+  std::vector<Day> days;              ///< to the horizon, or to where it ended
+  std::optional<FromDay> indicative;  ///< the constants no longer make a valid answer (speciation::coverage)
+  std::optional<FromDay> beyond;      ///< Day::beyond
+  Problems ended;  ///< why it ended before, with the day: no room for the salts, no equilibrium
   bath::TankState end;
   Balance balance;  ///< per component and per element; "water" and "charge" among them
   Ledger ledger;
@@ -102,7 +119,7 @@ struct LimitMet {
 /// How far one uncertain input moves the day of one limit: with the input one standard uncertainty lower and
 /// higher, everything else as it stands.
 struct Influence {
-  std::string input;  ///< "drag-out", "effects of deposition", "Ni^2+ at the start"
+  std::string input;  ///< "drag-out", "effects of deposition", "nickel at the start"
   double u_rel = 0;
   std::optional<double> day_lower, day_higher;  ///< nothing: not within the horizon
   double days = 0;  ///< half the way between the two; a day out of sight counts as the horizon
@@ -191,16 +208,19 @@ class Forecast {
   [[nodiscard]] Result<std::optional<std::vector<double>>> steady_state(const bath::TankState& start) const;
 
   /// Extra litres a day to bleed so that a quantity settles at `g_per_L`; nothing where it settles below
-  /// without.
+  /// without. Fails (not_converged) where no bleed does that, with the reason.
   [[nodiscard]] Result<std::optional<double>> bleed_to_hold(const bath::TankState& start,
                                                             const std::string& quantity,
                                                             double g_per_L) const;
 
   /// How many times the policy's work (and the area that passes with it) the tank can carry so that a
   /// quantity settles at `g_per_L` with the policy's bleed: 0 where it settles above without work, nothing
-  /// where it settles below whatever the load (drag-out grows with it).
+  /// where it settles below whatever the load (drag-out grows with it). Fails as bleed_to_hold does.
   [[nodiscard]] Result<std::optional<double>> largest_load(const bath::TankState& start,
                                                            const std::string& quantity, double g_per_L) const;
+
+  /// Names of what is uncertain in the policy, as in Influence::input.
+  [[nodiscard]] std::vector<std::string> uncertain() const;
 
   /// What the policy leaves out of account that somebody might expect in it.
   [[nodiscard]] const std::vector<std::string>& notes() const;

@@ -18,6 +18,13 @@ struct Uncertain {
   double u_rel = 0;
 };
 
+/// Two uncertain inputs that are not independent: what was learned of them from one log. By the names of
+/// Influence::input ("drag-out", "work, deposition"); of the logarithms.
+struct Correlation {
+  std::string one, other;
+  double correlation = 0;  ///< -1 to 1
+};
+
 /// Days are counted from the start of the forecast, day 0.
 struct Calendar {
   int shifts_per_day = 1;
@@ -134,13 +141,17 @@ struct Policy {
   double u_water_rel = 0;
   std::optional<Uptake> carbon_dioxide;
   double bleed_L_per_day = 0;  ///< drawn off evenly, day and night
+  bool bleed_at_work = false;  ///< evenly while it works instead, of days that work
   std::vector<Replenishment> replenishment;
   std::vector<Decant> decants;
   std::vector<FreezeOut> freeze_outs;
   std::vector<Rinse> rinses;
   double waste_price_per_L = 0;  ///< what it costs to be rid of bled and decanted solution
   std::vector<OwnLimit> limits;
+  std::vector<Correlation> correlations;  ///< of others than named here: none
   int horizon_days = 365;
+
+  [[nodiscard]] double bleed_L_per_h(bool works) const;
 };
 
 }  // namespace bathwright::forecast

@@ -21,8 +21,14 @@ struct OutOfWindow {
 
 struct HandOver {
   shifts::ShiftSpan shift;
-  std::vector<logbook::Entry> entries;     ///< logged during the shift, oldest first
-  std::vector<logbook::Entry> open_slips;  ///< of whatever shift
+  std::vector<logbook::Entry> entries;  ///< logged during the shift, oldest first
+  /// A slip that is not closed, and where it stands with a second person.
+  struct OpenSlip {
+    logbook::Entry slip;
+    std::string approved_by;        ///< "" where nobody did
+    bool must_be_approved = false;  ///< the tank takes no addition against it before
+  };
+  std::vector<OpenSlip> open_slips;        ///< of whatever shift
   std::vector<OutOfWindow> out_of_window;  ///< by the last uncorrected analysis of each tank in the shift
   std::vector<shifts::Due> due;            ///< before the end of the next shift, the earliest first
   std::optional<logbook::Anchor> head;     ///< of the log as it was read

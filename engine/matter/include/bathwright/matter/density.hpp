@@ -4,6 +4,7 @@
 
 #include <bathwright/base/result.hpp>
 #include <bathwright/units/quantity.hpp>
+#include <cstdint>
 #include <span>
 #include <string>
 #include <vector>
@@ -88,10 +89,12 @@ class SolutionDensity {
   };
 
   [[nodiscard]] double half_of_equivalents(std::span<const double> mol) const;
+  [[nodiscard]] double mass_of_solutes_kg(std::span<const double> mol, double half) const;
   [[nodiscard]] double solute_kg(const Solute& solute, std::span<const double> mol, double half) const;
 
   std::vector<double> kg_per_mol_;        // of each species
   std::vector<double> charge_magnitude_;  // of each species
+  std::vector<std::uint8_t> is_anion_;    // of each species: 1 or 0
   std::vector<Solute> solutes_;
   std::vector<std::string> warnings_;
 };

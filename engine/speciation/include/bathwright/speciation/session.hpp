@@ -44,10 +44,19 @@ class Session {
   /// storage for the eight.
   Outcome solve_variants(const Task& task, std::span<const Variant> variants, const VariantVisit& visit);
 
+  /// The same for variants that move little from call to call: each starts from the answer that the variant
+  /// in its place had last, the task from its own. As near as solve_near_last() to what solve_variants()
+  /// finds, and for the same reason.
+  Outcome solve_variants_near_last(const Task& task, std::span<const Variant> variants,
+                                   const VariantVisit& visit);
+
   /// The constants this session solves with: those of the solver until changed.
   Constants& ln_K();
 
  private:
+  enum class Start : std::uint8_t { task, last };
+  Outcome variants_from(Start start, const Task& task, std::span<const Variant> variants,
+                        const VariantVisit& visit);
   struct Storage;
   std::unique_ptr<Storage> storage_;
 };
