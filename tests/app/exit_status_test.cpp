@@ -34,7 +34,7 @@ TEST_CASE("a run ends with the status it promises", "[unit][command]") {
     int status;
   };
   const Case c =
-      GENERATE(Case{"", 0}, Case{"--help", 0}, Case{"--version", 0}, Case{"dose --help", 0},
+      GENERATE(Case{"", 3}, Case{"--help", 0}, Case{"--version", 0}, Case{"dose --help", 0},
                Case{"plugins list", 0}, Case{"sources Ni^2+", 0}, Case{"sources Nj^2+", 2},
                Case{"plugins show no-such", 2}, Case{"plugins check", 2}, Case{"plugins check no-such", 2},
                Case{"plugins check watts-nickel", 0}, Case{"no-such-verb", 2}, Case{"solution", 2},

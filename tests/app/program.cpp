@@ -30,7 +30,7 @@ Bench::~Bench() { fs::remove_all(folder_); }
 
 Run Bench::run(const std::string& arguments) const {
   const std::string out = (folder_ / "out").string(), err = (folder_ / "err").string();
-  const std::string command = "cd '" + (folder_ / "work").string() + "' && XDG_DATA_HOME='" +
+  const std::string command = "cd '" + (folder_ / "work").string() + "' && unset DISPLAY WAYLAND_DISPLAY && XDG_DATA_HOME='" +
                               (folder_ / "work/data").string() + "' XDG_STATE_HOME='" +
                               (folder_ / "state").string() +
                               "' XDG_CACHE_HOME='" TEST_CACHE "' USER=tester '" PROGRAM "' " + arguments +

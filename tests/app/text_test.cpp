@@ -55,7 +55,7 @@ TEST_CASE("the help of every verb ends with the options all of them take", "[uni
                           Catch::Contains("--json") && Catch::Contains("--plugins"));
 }
 
-TEST_CASE("without a verb the program says what it can do", "[unit][command]") {
+TEST_CASE("without a verb and a display the program says what to do instead", "[unit][command]") {
   const auto run = Bench().run("");
-  CHECK_THAT(run.out, Catch::Contains("--help") && Catch::Contains("later"));
+  CHECK_THAT(run.err, Catch::Contains("no display") && Catch::Contains("--help"));
 }
