@@ -59,7 +59,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
   if (!forecast) return fail(forecast.problems());
   const auto run = forecast->run(start->state);
   if (!run) return fail(run.problems());
-  told.from = start->read.from;
+  told.from = question.readings_file.empty() ? start->read.from : "the readings typed";
   told.currency = shop.tank.currency;
   told.notes = forecast->notes();
   for (const Problem& problem : run->ended) told.notes.push_back(problem.text());

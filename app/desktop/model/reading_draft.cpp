@@ -46,8 +46,11 @@ std::string with_unit(const std::string& text, const std::string& unit) {
 void set_usual(DraftRow& row) {
   const analysis::Method* method =
       row.is_value() ? nullptr : analysis::method(row.methods[static_cast<std::size_t>(row.method)]);
-  row.sample = method && method->usual_sample.v > 0 ? units::show(method->usual_sample, "mL") : "";
-  row.titrant = method && method->usual_titrant.v > 0 ? units::show(method->usual_titrant) : "";
+  // In the units their heads have, so that a bare number typed over one means the same.
+  row.sample = method && method->usual_sample.v > 0
+                   ? units::significant(units::value_in(method->usual_sample, "mL"))
+                   : "";
+  row.titrant = method && method->usual_titrant.v > 0 ? units::significant(method->usual_titrant.v) : "";
 }
 
 std::string& field_of(Draft& draft, int row, Field field) {

@@ -82,6 +82,11 @@ std::string method_words(std::string id) {
   return id;
 }
 
+/// As short as its column is narrow: powers of ten where zeros would fill it.
+std::string small_figure(double value) {
+  return value > 0 && value < 1e-3 ? fmt::format("{:.2e}", value) : figure(value, 3);
+}
+
 std::string room_words(double kg, double log10_room, bool covered) {
   if (!covered) return "";
   if (std::isfinite(kg)) return units::significant(kg, 2) + " kg";
@@ -274,8 +279,8 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
   constexpr std::size_t most_ions = 10;
   for (const bath::SpeciesView& species : now.species) {
     if (view.ions.size() == most_ions) break;
-    view.ions.push_back({species.name, pretty(species.name), figure(species.molality, 3),
-                         figure(std::pow(10, species.log10_activity), 3), figure(species.gamma, 3),
+    view.ions.push_back({species.name, pretty(species.name), small_figure(species.molality),
+                         small_figure(std::pow(10, species.log10_activity)), figure(species.gamma, 3),
                          species.molality / now.species.front().molality});
   }
   for (const bath::Headroom& room : now.headroom) {
@@ -491,7 +496,8 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
     row.why = std::string(forecast::name(limit.cause));
     if (limit.day) {
       row.state = charts::State::act;
-      row.when = "day " + fixed(*limit.day, 0) + (told.dates[i].empty() ? "" : ", " + told.dates[i]);
+      row.when = (*limit.day < 0.5 ? std::string("now") : "day " + fixed(*limit.day, 0)) +
+                 (told.dates[i].empty() ? "" : ", " + told.dates[i]);
       if (told.sampled && limit.day_p05 && limit.day_p95)
         row.span = fixed(*limit.day_p05, 0) + " to " + fixed(*limit.day_p95, 0);
     } else {

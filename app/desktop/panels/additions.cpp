@@ -20,6 +20,8 @@ void draw_amounts(const AdditionsView& view, const Look& look, Intents& out) {
     ImGui::SetNextItemWidth(look.px(84));
     bool changed = ImGui::InputDouble("##typed", &amount, 0, 0, row.largest < 10 ? "%.3f" : "%.2f");
     note_place(look, "amount " + row.chemical);
+    ImGui::SameLine();
+    ImGui::TextUnformatted(row.unit.c_str());
     ImGui::SameLine(look.px(120));
     ImGui::SetNextItemWidth(-1);
     if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, ""))

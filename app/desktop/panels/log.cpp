@@ -69,7 +69,7 @@ void draw_log(const LogView& view, PanelState& state, const Look& look, Intents&
   if (view.shown_text.empty()) return;
   heading(look, "Entry " + std::to_string(view.shown));
   ImGui::BeginChild("entry", {0, 0}, false);
-  for (const std::string& line : view.shown_text) said(look, look.palette.ink, line);
+  sheet(look, view.shown_text);
   ImGui::EndChild();
 }
 

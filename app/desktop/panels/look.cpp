@@ -36,6 +36,12 @@ void bold(const Look& look, const std::string& words) {
   ImGui::PopFont();
 }
 
+void sheet(const Look& look, const std::vector<std::string>& lines) {
+  ImGui::PushFont(look.fonts.mono);
+  for (const std::string& line : lines) ImGui::TextUnformatted(line.empty() ? " " : line.c_str());
+  ImGui::PopFont();
+}
+
 void right_aligned(const std::string& words, ImFont* font) {
   if (font) ImGui::PushFont(font);
   const float room = ImGui::GetContentRegionAvail().x - ImGui::CalcTextSize(words.c_str()).x;

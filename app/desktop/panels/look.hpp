@@ -6,6 +6,7 @@
 #include <bathwright/charts/palette.hpp>
 #include <map>
 #include <string>
+#include <vector>
 
 #include "../draw/draw_list_canvas.hpp"
 #include "../window/fonts.hpp"
@@ -29,6 +30,8 @@ void heading(const Look& look, const std::string& words);  ///< of a card, with 
 void quiet(const Look& look, const std::string& words);    ///< in quiet ink, wrapped
 void said(const Look& look, charts::Colour colour, const std::string& words);  ///< wrapped
 void bold(const Look& look, const std::string& words);
+/// Lines of a sheet as they stand, their columns one under the other.
+void sheet(const Look& look, const std::vector<std::string>& lines);
 /// Ends at the right edge of the cell or region.
 void right_aligned(const std::string& words, ImFont* font = nullptr);
 

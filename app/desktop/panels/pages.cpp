@@ -70,7 +70,7 @@ void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& 
   if (main_button(look, "Sign and hand over", may)) out.emplace_back(HandOver{names});
   came_of_it(sign, look);
   ImGui::Separator();
-  for (const std::string& line : view.text) said(look, look.palette.ink, line.empty() ? " " : line);
+  sheet(look, view.text);
 }
 
 void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look) {
@@ -82,7 +82,7 @@ void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look) {
   if (!ImGui::BeginTable("types", 5, ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH))
     return;
   for (const auto& [name, weight] :
-       {std::pair{"bath type", 1.6F}, {"version", 0.6F}, {"state", 0.8F}, {"file", 1.8F}, {"why", 3.0F}})
+       {std::pair{"bath type", 1.6F}, {"version", 0.6F}, {"state", 0.8F}, {"file", 2.2F}, {"why", 2.6F}})
     ImGui::TableSetupColumn(name, 0, weight);
   ImGui::TableHeadersRow();
   for (const BathTypeRow& row : rows) {

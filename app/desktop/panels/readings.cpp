@@ -73,6 +73,7 @@ class ReadingsPanel {
             which == Field::volume ? "or 3 cm low" : "");
       ImGui::SameLine(0, look_.px(16));
     }
+    ImGui::NewLine();
     if (button(look_, "Undo", view_.can_undo)) out_.emplace_back(UndoTyping{});
     ImGui::SameLine();
     if (button(look_, "Redo", view_.can_redo)) out_.emplace_back(RedoTyping{});
@@ -80,6 +81,7 @@ class ReadingsPanel {
     if (button(look_, "New sample")) out_.emplace_back(NewSample{});
     if (ImGui::IsItemHovered()) ImGui::SetTooltip("puts these readings away; Undo brings them back");
     // Always a line, so that nothing moves under the pointer with the first letter.
+    ImGui::SameLine(0, look_.px(16));
     quiet(look_, view_.sampled.empty() ? "nothing typed yet" : "sample of " + view_.sampled);
   }
 

@@ -7,7 +7,7 @@ void draw_state(const StateView& view, const Look& look) {
   if (!view.from.empty()) quiet(look, view.from);
   if (!ImGui::BeginTable("levels", 5, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] :
-       {std::pair{"component", 1.9F}, {"strip", 2.3F}, {"found", 0.8F}, {"then", 0.9F}, {"word", 1.9F}})
+       {std::pair{"component", 1.9F}, {"strip", 2.3F}, {"found", 0.8F}, {"then", 1.1F}, {"word", 1.9F}})
     ImGui::TableSetupColumn(name, 0, weight);
   for (const ComponentRow& row : view.rows) {
     ImGui::TableNextRow();
@@ -21,7 +21,11 @@ void draw_state(const StateView& view, const Look& look) {
     ImGui::TableNextColumn();
     right_aligned(row.found);
     ImGui::TableNextColumn();
-    if (!row.predicted.empty()) said(look, look.palette.predicted, "then " + row.predicted);
+    if (!row.predicted.empty()) {
+      ImGui::PushStyleColor(ImGuiCol_Text, colour(look.palette.predicted));
+      ImGui::TextUnformatted(("then " + row.predicted).c_str());
+      ImGui::PopStyleColor();
+    }
     ImGui::TableNextColumn();
     standing(look, static_cast<int>(row.state), row.word);
     quiet(look, row.unit + (row.unit.empty() ? "aim " : ", aim ") + row.aim);

@@ -14,11 +14,12 @@ struct Release {
 };
 
 constexpr const char* family = "Noto Sans";
+constexpr const char* mono_family = "Noto Sans Mono";
 
-/// The file of the family's regular or bold face; empty where only another family is there.
-std::string font_file(FcConfig* config, bool bold) {
+/// The file of a family's regular or bold face; empty where only another family is there.
+std::string font_file(FcConfig* config, const char* wanted_family, bool bold) {
   const std::unique_ptr<FcPattern, Release> wanted(FcPatternCreate());
-  FcPatternAddString(wanted.get(), FC_FAMILY, reinterpret_cast<const FcChar8*>(family));
+  FcPatternAddString(wanted.get(), FC_FAMILY, reinterpret_cast<const FcChar8*>(wanted_family));
   FcPatternAddInteger(wanted.get(), FC_WEIGHT, bold ? FC_WEIGHT_BOLD : FC_WEIGHT_REGULAR);
   FcPatternAddInteger(wanted.get(), FC_SLANT, FC_SLANT_ROMAN);
   FcConfigSubstitute(config, wanted.get(), FcMatchPattern);
@@ -29,8 +30,9 @@ std::string font_file(FcConfig* config, bool bold) {
   if (!found || FcPatternGetString(found.get(), FC_FILE, 0, &file) != FcResultMatch ||
       FcPatternGetString(found.get(), FC_FAMILY, 0, &name) != FcResultMatch)
     return {};
-  return std::string(reinterpret_cast<const char*>(name)) == family ? reinterpret_cast<const char*>(file)
-                                                                    : "";
+  return std::string(reinterpret_cast<const char*>(name)) == wanted_family
+             ? reinterpret_cast<const char*>(file)
+             : "";
 }
 
 /// Latin, Greek, the marks of text, sub- and superscripts, arrows, signs of comparison.
@@ -41,11 +43,14 @@ constexpr ImWchar letters[] = {0x0020, 0x017F, 0x0370, 0x03FF, 0x2010, 0x2044, 0
 
 Result<Fonts> load_fonts(float scale) {
   const std::unique_ptr<FcConfig, Release> config(FcInitLoadConfigAndFonts());
-  const std::string regular = config ? font_file(config.get(), false) : "",
-                    bold = config ? font_file(config.get(), true) : "";
-  if (regular.empty() || bold.empty())
-    return Problem{Fault::io, "fonts", std::string("the font ") + family + " is not installed", "",
-                   "Install the package fonts-noto-core, or use the command line: bathwright --help."};
+  const std::string regular = config ? font_file(config.get(), family, false) : "",
+                    bold = config ? font_file(config.get(), family, true) : "",
+                    mono = config ? font_file(config.get(), mono_family, false) : "";
+  if (regular.empty() || bold.empty() || mono.empty())
+    return Problem{Fault::io, "fonts",
+                   std::string("the font ") + (mono.empty() ? mono_family : family) + " is not installed", "",
+                   "Install the packages fonts-noto-core and fonts-noto-mono, or use the command line: "
+                   "bathwright --help."};
   ImFontAtlas& atlas = *ImGui::GetIO().Fonts;
   atlas.Clear();
   const auto load = [&](const std::string& file, float px) {
@@ -55,6 +60,7 @@ Result<Fonts> load_fonts(float scale) {
   fonts.body = load(regular, body_px);  // the first one is the default
   fonts.caption = load(regular, caption_px);
   fonts.bold = load(bold, body_px);
+  fonts.mono = load(mono, caption_px);
   fonts.heading = load(bold, heading_px);
   fonts.large = load(regular, large_px);
   if (!atlas.Build())

@@ -8,7 +8,8 @@
 namespace bathwright::desktop {
 
 struct Fonts {
-  ImFont *caption = nullptr, *body = nullptr, *bold = nullptr, *heading = nullptr, *large = nullptr;
+  ImFont *mono = nullptr,  ///< of sheets laid out in columns
+      *caption = nullptr, *body = nullptr, *bold = nullptr, *heading = nullptr, *large = nullptr;
 };
 
 /// Heights of a line in pixels at a scale of 1; the letters are three quarters of it.
