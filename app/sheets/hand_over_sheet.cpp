@@ -27,6 +27,12 @@ std::string approval(const hand_over::HandOver::OpenSlip& open) {
                                : "Approved by nobody.";
 }
 
+/// "analysis of Ni²⁺" of "analysis of Ni^2+".
+std::string in_words(const std::string& what) {
+  const std::size_t last = what.rfind(' ') + 1;
+  return what.substr(0, last) + pretty(what.substr(last));
+}
+
 }  // namespace
 
 Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& calendar,
@@ -67,7 +73,7 @@ Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& cal
   Table due({{"due"}, {"tank"}, {"what"}});
   for (const auto& one : told.due)
     due.add({one.last ? (one.overdue ? "overdue since " : "") + local(one.at) : "never done", one.tank,
-             one.what});
+             in_words(one.what)});
   if (due.empty())
     next.blocks.emplace_back(Paragraph{"Nothing that has a schedule."});
   else

@@ -39,7 +39,8 @@ TEST_CASE("the slip has what somebody who asks later needs", "[unit][command]") 
             "nickel-sulfate = { grade = \"plating\", lot = \"24-0815\", expires = 2027-06-30, assay = \"99 %\""}}));
   bench.write("readings.toml", "sample_number = \"0302-7\"\nsampled_by = \"J. Marsh\"\n" +
                                    app_test::content_of(app_test::readings));
-  const auto run = bench.run("dose tank.toml readings.toml --slip --html slip.html" + log_option);
+  const auto run =
+      bench.run("dose tank.toml readings.toml --slip --html slip.html --pdf slip.pdf" + log_option);
   INFO(run.out << run.err);
   for (const char* part :
        {"Slip 3", "line 2", "revision C from 2026-01-15, shift chemist",
@@ -49,9 +50,13 @@ TEST_CASE("the slip has what somebody who asks later needs", "[unit][command]") 
         "nonconformance", "Re-analyse"})
     CHECK_THAT(run.out, Catch::Contains(part));
   CHECK(app_test::widest_line(run.out) <= 80);
-  // One A4 page holds 88 lines of 8 point.
-  const std::string page = run.out.substr(0, run.out.find("Computed with"));
-  CHECK(std::count(page.begin(), page.end(), '\n') < 88);
+  // On paper: a page to work from, and one with what is read at the desk.
+  const std::string pdf = bench.read("slip.pdf");
+  std::size_t pages = 0;
+  for (std::size_t at = pdf.find("/Type /Page\n"); at != std::string::npos;
+       at = pdf.find("/Type /Page\n", at + 1))
+    ++pages;
+  CHECK(pages == 2);
   CHECK_THAT(bench.read("slip.html"), Catch::Contains("<!DOCTYPE html>") && Catch::Contains("lot 24-0815") &&
                                           Catch::Contains("Slip 3"));
 }

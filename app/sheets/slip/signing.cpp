@@ -36,8 +36,8 @@ Section signing(const AdditionSlip& slip) {
   const Signature& by = slip.signature;
   Section section;
   const bool doses = !slip.sheet.plans.empty() && !slip.sheet.plans.front().additions.empty();
-  section.blocks.push_back(Paragraph{next(slip)});
-  if (doses) section.blocks.push_back(Paragraph{re_analysis(slip, slip.sheet.plans.front())});
+  section.blocks.push_back(
+      Paragraph{next(slip) + (doses ? " " + re_analysis(slip, slip.sheet.plans.front()) : "")});
   std::string prepared = by.prepared_by;
   if (!by.issued.empty()) prepared += ", " + by.issued;
   if (!by.shift.empty()) prepared += ", shift " + by.shift;

@@ -51,9 +51,7 @@ std::vector<std::string> notes_by_what_they_say(const std::vector<std::string>& 
 }  // namespace
 
 Section warnings(const AdditionSlip& slip) {
-  Section section{"Cautions", {}};
-  if (const std::string text = in_one(cautions(slip.sheet.cautions)); !text.empty())
-    section.blocks.push_back(Paragraph{text});
+  Section section = cautions(slip.sheet.cautions);  // each on lines of its own: one of them is meant for you
   if (const std::string on_labels = codes(slip); !on_labels.empty())
     section.blocks.push_back(Paragraph{"On the labels: " + on_labels + "; see the SDS."});
   return section;
