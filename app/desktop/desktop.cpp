@@ -23,6 +23,7 @@ Outcome run(const work::Session& session, const std::filesystem::path& shop) {
       if (const auto* look = std::get_if<SetLook>(&intent)) window.set_look(look->scale, look->dark);
     }
     if (!intents.empty()) Window::wake();
+    return desk.working();
   });
   return Done{};
 }

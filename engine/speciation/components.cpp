@@ -83,23 +83,22 @@ std::vector<Candidate> candidates(const Formula& formula, const std::vector<std:
   return found;
 }
 
-/// Offers every set of up to four candidates, small sets first.
+/// Offers every set of up to four candidates, small sets first, until one is good enough (true).
 template <class Offer>
 void each_set(const std::vector<Candidate>& from, Offer offer) {
   constexpr std::size_t largest = 4;
   std::vector<const Candidate*> chosen;
-  auto choose = [&](auto&& self, std::size_t start, std::size_t wanted) -> void {
-    if (wanted == 0) {
-      offer(chosen);
-      return;
-    }
+  auto choose = [&](auto&& self, std::size_t start, std::size_t wanted) -> bool {
+    if (wanted == 0) return offer(chosen);
     for (std::size_t i = start; i + wanted <= from.size(); ++i) {
       chosen.push_back(&from[i]);
-      self(self, i + 1, wanted - 1);
+      if (self(self, i + 1, wanted - 1)) return true;
       chosen.pop_back();
     }
+    return false;
   };
-  for (std::size_t size = 1; size <= std::min(largest, from.size()); ++size) choose(choose, 0, size);
+  for (std::size_t size = 1; size <= std::min(largest, from.size()); ++size)
+    if (choose(choose, 0, size)) return;
 }
 
 const SpeciesData* species_with_composition(const Formula& formula, const Equilibria& equilibria) {
@@ -132,16 +131,17 @@ Result<Parts> parts_of(const Formula& formula, const Equilibria& equilibria) {
   double least_water = std::numeric_limits<double>::infinity();
   each_set(candidates(formula, equilibria.basis()), [&](const auto& chosen) {
     const auto x = keeps_ligands(formula, chosen) ? coefficients(formula, chosen, true) : std::nullopt;
-    if (!x) return;
+    if (!x) return false;
     const auto n = static_cast<Eigen::Index>(chosen.size());
     const double protons = (*x)(n), water = (*x)(n + 1), made = std::abs(water - formula.crystal_water());
-    if (made > least_water - integer_tolerance) return;
+    if (made > least_water - integer_tolerance) return false;
     least_water = made;
     parts = {};
     for (std::size_t k = 0; k < chosen.size(); ++k)
       parts.basis[chosen[k]->name] = std::round((*x)(static_cast<Eigen::Index>(k)));
     if (std::abs(protons) > integer_tolerance) parts.basis["H^+"] += std::round(protons);
     parts.water = std::abs(water) > integer_tolerance ? water : 0;
+    return made < integer_tolerance;  // nothing makes less; among cyanides there are tens of thousands of sets
   });
   if (std::isfinite(least_water)) return parts;
   std::string known;

@@ -23,7 +23,8 @@ constexpr const char* restarted =
     "BATHWRIGHT_SOFTWARE_PICTURE";  // set in the second start, so that there is no third
 constexpr int least_width = 1100, least_height = 700;
 constexpr int pictures_after_input = 3;  // a click is seen in the first, what it opens laid out in the next
-constexpr double longest_sleep_s = 1;    // the clock on the shift strip
+constexpr double at_rest_s = 10;         // the clock on the shift strip shows minutes
+constexpr double at_work_s = 0.2;        // how far work has come
 
 std::string last_error() {
   const char* words = nullptr;
@@ -159,18 +160,20 @@ bool Window::picture(const std::function<void()>& draw) {
   return !glfwWindowShouldClose(open.window);
 }
 
-void Window::run(const std::function<void()>& draw) {
+void Window::run(const std::function<bool()>& draw) {
   Open& open = *open_;
+  bool at_work = false;
   while (!glfwWindowShouldClose(open.window)) {
-    const double before = glfwGetTime();
+    const double before = glfwGetTime(), sleep_s = at_work ? at_work_s : at_rest_s;
     if (open.pictures_due > 0) {
       glfwPollEvents();
       --open.pictures_due;
     } else {
-      glfwWaitEventsTimeout(longest_sleep_s);
-      if (glfwGetTime() - before < longest_sleep_s) open.pictures_due = pictures_after_input;
+      glfwWaitEventsTimeout(sleep_s);
+      constexpr double nearly = 0.95;  // a sleep that was not broken ends a little early or late
+      if (glfwGetTime() - before < nearly * sleep_s) open.pictures_due = pictures_after_input;
     }
-    picture(draw);
+    picture([&] { at_work = draw(); });
   }
 }
 

@@ -29,8 +29,9 @@ class Window {
   ~Window();
 
   /// Draws pictures until the window is closed. A picture is drawn after input, after `wake`, and a few times
-  /// more for what settles (a focus, a size); otherwise the program sleeps.
-  void run(const std::function<void()>& draw);
+  /// more for what settles (a focus, a size); some more while `draw` says that work goes on. Otherwise the
+  /// program sleeps.
+  void run(const std::function<bool()>& draw);
   /// One picture, whatever happens; false once the window is to be closed.
   bool picture(const std::function<void()>& draw);
   void close();

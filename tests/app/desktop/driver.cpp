@@ -113,7 +113,10 @@ void Driver::sleep_as_the_window_does(double seconds) {
     desktop::Window::wake();
   });
   Intents intents;
-  window_->run([&] { draw(intents); });
+  window_->run([&] {
+    draw(intents);
+    return desk_->working();
+  });
 }
 
 void Driver::pictures(int count) {

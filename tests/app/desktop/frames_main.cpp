@@ -100,7 +100,7 @@ std::string at_size(int width, int height) {
   driver.click("The shift");
   driver.until([&] { return !driver.desk().working(); });
   const double cpu = cpu_s();
-  constexpr int idle_s = 5;
+  constexpr int idle_s = 12;
   const auto idle = std::chrono::steady_clock::now();
   driver.sleep_as_the_window_does(idle_s);
   const double share =
