@@ -227,7 +227,7 @@ AdditionsView additions_view(const Worked& worked, int chosen,
   for (const dosing::Step& step : plan->steps) {
     StepRow row;
     row.number = std::to_string(step.number);
-    row.what = figure(step.amount) + " " + step.unit + " " + step.name;
+    row.what = sheets::measured(step.amount, step.unit) + " " + step.name;
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
     for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH))
@@ -236,7 +236,7 @@ AdditionsView additions_view(const Worked& worked, int chosen,
                         judged.unit.empty() ? 2 : 1) +
                   ", ";
     row.then += units.volume(step.predicted.volume_L);
-    if (step.wait_h > 0) row.wait = "wait " + figure(step.wait_h, 2) + " h, stirred";
+    if (step.wait_h > 0) row.wait = "wait " + sheets::waiting(step.wait_h) + ", stirred";
     for (const dosing::Check& check : step.checks) {
       if (check.ok || (!check.stops && !told.insert(check.name).second)) continue;
       (check.stops ? row.stops : row.watch).push_back(pretty_words(check.name + ": " + check.detail));
@@ -372,10 +372,11 @@ SlipView slip_view(const std::optional<work::OpenSlip>& slip,
   for (const work::SlipStep& step : slip->steps) {
     SlipView::Row row;
     row.step = step.number;
-    row.what = std::to_string(step.number) + "  " + figure(step.amount) + " " + step.unit + " " + step.name;
+    row.what =
+        std::to_string(step.number) + "  " + sheets::measured(step.amount, step.unit) + " " + step.name;
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
-    if (step.wait_h > 0) row.wait = "then wait " + figure(step.wait_h, 2) + " h, stirred";
+    if (step.wait_h > 0) row.wait = "then wait " + sheets::waiting(step.wait_h) + ", stirred";
     if (step.done_as)
       row.done = "entry " + std::to_string(*step.done_as) + ", " + sheets::local_time(step.done_at, calendar);
     view.all_done = view.all_done && step.done_as.has_value();

@@ -32,10 +32,7 @@ std::string largest_at_once(const AdditionSlip& slip, const std::string& chemica
 
 std::string wait(const dosing::Step& step) {
   if (!(step.wait_h > 0)) return "";
-  constexpr double minutes = 60;
-  const std::string time =
-      step.wait_h < 1 ? fixed(minutes * step.wait_h, 0) + " min" : figure(step.wait_h, 2) + " h";
-  return "then wait " + time + ", stirred" + (step.portions > 1 ? ", after each" : "");
+  return "then wait " + waiting(step.wait_h) + ", stirred" + (step.portions > 1 ? ", after each" : "");
 }
 
 std::string sentence(std::string text) {

@@ -30,8 +30,6 @@ namespace bathwright::sheets::slip {
 /// What comes next, and the lines to sign on.
 [[nodiscard]] Section signing(const AdditionSlip& slip);
 
-/// An amount as one would weigh or measure it: grams below a kilogram, millilitres below a litre.
-[[nodiscard]] std::string measured(double amount, const std::string& unit);
 /// "2 x 25 kg and 6.05 kg": whole containers and what is taken of one more; "" where none is whole.
 [[nodiscard]] std::string containers(const bath::ShelfItem& item, double amount, const std::string& unit);
 /// "NiSO4.6H2O, 99 %, technical; lot 24-0815, to 2027-06-30".

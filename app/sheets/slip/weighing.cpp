@@ -32,13 +32,6 @@ std::string label_of(const bath::ShelfItem& item) {
   return text;
 }
 
-std::string measured(double amount, const std::string& unit) {
-  constexpr int grams = 1000;
-  if (amount < 1 && unit == "kg") return figure(grams * amount) + " g";
-  if (amount < 1 && unit == "L") return figure(grams * amount) + " mL";
-  return figure(amount) + " " + unit;
-}
-
 std::string plain(double value) { return fmt::format("{:g}", value); }
 
 std::string money(double cost, const bath::Tank& tank) {
