@@ -96,13 +96,8 @@ Json json_of(const sheets::ForecastPage& page) {
   doc["horizon_days"] = page.run.days.back().day;
   doc["samples"] = page.bands ? page.bands->samples : 0;
   const auto date = [&](const std::optional<double>& day) {
-    if (!day) return Json();
-    const auto ymd = page.forecast.policy().calendar.date(static_cast<int>(std::floor(*day)));
-    if (!ymd) return Json();
-    char text[16];
-    std::snprintf(text, sizeof text, "%04d-%02u-%02u", static_cast<int>(ymd->year()),
-                  static_cast<unsigned>(ymd->month()), static_cast<unsigned>(ymd->day()));
-    return Json(text);
+    const std::string text = sheets::iso_date(page.forecast.policy(), day);
+    return text.empty() ? Json() : Json(text);
   };
   doc["limits"] = Json::array();
   for (const auto& limit : page.limits)

@@ -1,3 +1,5 @@
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <array>
 #include <bathwright/sheets/cautions.hpp>
@@ -238,6 +240,14 @@ void say_policies(Lines& lines, const ForecastPage& page) {
 }
 
 }  // namespace
+
+std::string iso_date(const forecast::Policy& policy, const std::optional<double>& day) {
+  if (!day) return "";
+  const auto date = policy.calendar.date(static_cast<int>(std::floor(*day)));
+  if (!date) return "";
+  return fmt::format("{:04}-{:02}-{:02}", static_cast<int>(date->year()),
+                     static_cast<unsigned>(date->month()), static_cast<unsigned>(date->day()));
+}
 
 const PolicySummary* cheapest_that_holds(const std::vector<PolicySummary>& policies) {
   const PolicySummary* best = nullptr;

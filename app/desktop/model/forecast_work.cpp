@@ -1,8 +1,6 @@
 #include "forecast_work.hpp"
 
 #include <bathwright/shopfiles/policy_file.hpp>
-#include <cmath>
-#include <cstdio>
 #include <thread>
 
 namespace bathwright::desktop {
@@ -19,16 +17,6 @@ forecast::Policy moved(forecast::Policy policy, const Levers& levers) {
   for (forecast::Work& work : policy.work) work.per_shift.value *= levers.load;
   policy.horizon_days = levers.horizon_days;
   return policy;
-}
-
-std::string date_of(const forecast::Policy& policy, const std::optional<double>& day) {
-  if (!day) return "";
-  const auto date = policy.calendar.date(static_cast<int>(std::floor(*day)));
-  if (!date) return "";
-  char text[16];
-  std::snprintf(text, sizeof text, "%04d-%02u-%02u", static_cast<int>(date->year()),
-                static_cast<unsigned>(date->month()), static_cast<unsigned>(date->day()));
-  return text;
 }
 
 }  // namespace
@@ -67,7 +55,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
     told.limits = bands ? bands->limits : forecast->limits(*run);
     told.summary = forecast->summary(*run, forecast->limits(*run));
     told.dates.clear();
-    for (const auto& limit : told.limits) told.dates.push_back(date_of(policy, limit.day));
+    for (const auto& limit : told.limits) told.dates.push_back(sheets::iso_date(policy, limit.day));
     sheets::ForecastPage page{shop.tank, *forecast,   *run,
                               bands,     told.limits, std::nullopt,
                               "",        told.bleeds, question.policy_file.filename().string(),

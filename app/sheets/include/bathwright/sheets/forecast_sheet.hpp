@@ -6,6 +6,10 @@
 
 namespace bathwright::sheets {
 
+/// "2026-04-18", the date of a day of a forecast, for documents and tables; "" where the policy has no date to
+/// count from, or there is no day.
+[[nodiscard]] std::string iso_date(const forecast::Policy& policy, const std::optional<double>& day);
+
 /// What a limit needs to be held.
 struct BleedToHold {
   std::string limit;                     ///< "aluminium at 15.00 g/L"
