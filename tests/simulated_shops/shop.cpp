@@ -24,8 +24,9 @@ double on_average_one(std::mt19937_64& random, double u) {
 
 // Per ampere-hour: Ni 1.0950 g, Cu(II) 1.1855 g, Zn 1.2197 g. Contents of products from molar masses:
 // NiSO4.6H2O 262.84 with Ni 58.693; NiCl2.6H2O 237.69 with 2 Cl 70.906; CuSO4.5H2O 249.68 with Cu 63.546;
-// ZnO 81.379 with Zn 65.38; Na2CO3 105.99 takes 2 NaOH 79.994; hypophosphite and phosphite per gram of nickel
-// as the electroless bath type states them.
+// ZnO 81.379 with Zn 65.38 takes 2 NaOH 79.994 of what is free, and plating its zinc gives them back; Na2CO3
+// 105.99 takes 2 NaOH 79.994; hypophosphite and phosphite per gram of nickel as the electroless bath type
+// states them.
 const std::vector<Kind>& kinds() {
   static const std::vector<Kind> all = [] {
     std::vector<Kind> k(4);
@@ -61,9 +62,9 @@ const std::vector<Kind>& kinds() {
     zinc.tank_file = "z-02.toml", zinc.bath_type = "alkaline-zinc";
     zinc.mark_L = 5000, zinc.surface_m2 = 4.5;
     zinc.substances = {{"Zn^2+", 12, 0.008, 1}, {"NaOH", 125, 0.010, 1}, {"Na2CO3", 40, 0.03, 5}};
-    zinc.products = {{"zinc-oxide", {799.4, 0, 0}, 0, 0.1, 0.02},
+    zinc.products = {{"zinc-oxide", {799.4, -978.1, 0}, 0, 0.1, 0.02},
                      {"sodium-hydroxide", {0, 985, 0}, 1, 1, 0.02}};
-    zinc.work = {{"deposition", {0, 0, 0}, {1.2197, 0, 0}, 0.72, 0, 0.08, 0, 0.02, 8000},
+    zinc.work = {{"deposition", {0, 0, 0}, {1.2197, -1.4923, 0}, 0.72, 0, 0.08, 0, 0.02, 8000},
                  {"carbonation", {0, -15.095, 20}, {0, 0, 0}, 1, 0, 0, 1, 0, 0, true}};
     zinc.area_m2_per_shift = 123;
     zinc.evaporation_L_per_h = 1, zinc.idle_evaporation_L_per_h = 0.5;
