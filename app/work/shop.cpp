@@ -1,6 +1,5 @@
 #include "shop.hpp"
 
-#include <bathwright/bath/at_aims.hpp>
 
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
@@ -91,10 +90,6 @@ Result<Shop> shop_of(const Session& session, bath::Tank tank) {
   });
   const std::string hash = listed == types.list().end() ? "" : " sha256:" + listed->sha256;
   return Shop{std::move(tank), *std::move(chemistry), type->id + " " + type->version + hash};
-}
-
-Result<bath::TankState> state_at_aims(const Shop& shop) {
-  return bath::state_at_aims(shop.tank, shop.chemistry);
 }
 
 }  // namespace bathwright::work

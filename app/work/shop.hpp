@@ -30,7 +30,4 @@ Result<Shop> open_shop(const Session& session, const std::string& tank_path);
 /// The same for a tank that was read already.
 Result<Shop> shop_of(const Session& session, bath::Tank tank);
 
-/// The state of a tank as the tank's own aims describe it, at the mark.
-Result<bath::TankState> state_at_aims(const Shop& shop);
-
 }  // namespace bathwright::work

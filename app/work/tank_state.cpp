@@ -1,5 +1,6 @@
 #include "tank_state.hpp"
 
+#include <bathwright/bath/at_aims.hpp>
 #include <bathwright/book/from_log.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
@@ -156,7 +157,7 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
                          {"analysis of " + (*last)->book.from + age, (*last)->temperature, *(*last)->book.pH,
                           (*last)->changed_since}};
   }
-  auto state = state_at_aims(shop);
+  auto state = bath::state_at_aims(shop.tank, shop.chemistry);
   if (!state) return state.problems();
   const bath::Aim* aim = shop.tank.aim("pH");
   double pH = aim ? aim->aim : 0;
