@@ -5,7 +5,6 @@
 #include <algorithm>
 #include <bathwright/charts/page_file.hpp>
 #include <bathwright/sheets/forecast_charts.hpp>
-#include <bathwright/shopfiles/policy_file.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
 #include <csignal>
@@ -269,14 +268,14 @@ Result<forecast::Bands> sampled(const Context& context, const Options& options, 
 
 /// Each of the files as a policy of this tank, to set beside the first.
 Result<std::vector<sheets::PolicySummary>> others(const Options& options, const Shop& shop,
-                                                  const bath::TankState& start) {
+                                                  const StartingState& start) {
   std::vector<sheets::PolicySummary> all;
   Problems problems;
   for (const std::string& file : options.against) {
-    const auto policy = shopfiles::read_policy(file, shop.type());
+    const auto policy = work::policy_from(start, file, shop.type());
     const auto forecast =
         policy ? Forecast::prepare(shop.tank, shop.chemistry, *policy) : Result<Forecast>(policy.problems());
-    const auto run = forecast ? forecast->run(start) : Result<forecast::Run>(forecast.problems());
+    const auto run = forecast ? forecast->run(start.state) : Result<forecast::Run>(forecast.problems());
     if (run)
       all.push_back({file, policy->horizon_days, forecast->summary(*run, forecast->limits(*run))});
     else
@@ -289,10 +288,10 @@ Result<std::vector<sheets::PolicySummary>> others(const Options& options, const 
 int run(const Context& context, const Options& options) {
   const auto shop = open_shop(context, options.tank);
   if (!shop) return fail(context, shop.problems());
-  const auto policy = shopfiles::read_policy(options.policy, shop->type());
-  if (!policy) return fail(context, policy.problems());
   const auto start = starting_state(context, *shop, options.readings);
   if (!start) return fail(context, start.problems());
+  const auto policy = work::policy_from(*start, options.policy, shop->type());
+  if (!policy) return fail(context, policy.problems());
   const auto forecast = Forecast::prepare(shop->tank, shop->chemistry, *policy);
   if (!forecast) return fail(context, of_file(options.policy, forecast.problems()));
   const auto one = forecast->run(start->state);
@@ -322,7 +321,7 @@ int run(const Context& context, const Options& options) {
     if (auto moved = forecast->sensitivity(start->state)) page.sensitivity = *std::move(moved);
   }
   if (!options.against.empty()) {
-    auto beside = others(options, *shop, start->state);
+    auto beside = others(options, *shop, *start);
     if (!beside) return fail(context, beside.problems());
     page.policies = *std::move(beside);
     page.policies.insert(page.policies.begin(), {options.policy, policy->horizon_days,

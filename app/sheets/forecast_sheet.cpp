@@ -262,8 +262,9 @@ Lines forecast_sheet(const ForecastPage& page) {
   const Day& last = page.run.days.back();
   tank_title(lines, page.tank, page.tank.working_volume.v, page.tank.temperature);
   say(lines, deferral);
-  say(lines, "Policy: " + page.policy_file + ", " + std::to_string(last.day) +
-                 " days. State: " + page.state_from + ".");
+  const std::string from = date_of(page, 0);
+  say(lines, "Policy: " + page.policy_file + ", " + std::to_string(last.day) + " days" +
+                 (from.empty() ? "" : " from " + from) + ". State: " + page.state_from + ".");
   if (page.bands)
     say(lines, std::to_string(page.bands->samples) +
                    " samples of what the policy and the bath type state as uncertain.");

@@ -2,6 +2,8 @@
 
 #include <bathwright/bath/at_aims.hpp>
 #include <bathwright/book/from_log.hpp>
+#include <bathwright/sheets/log_sheet.hpp>
+#include <bathwright/shopfiles/policy_file.hpp>
 #include <bathwright/shopfiles/readings_file.hpp>
 #include <bathwright/shopfiles/tank_file.hpp>
 #include <bathwright/units/show.hpp>
@@ -25,7 +27,8 @@ Result<bath::TankState> state_of(const LastAnalysis& last, const Shop& shop) {
 }
 
 /// The tank as the book has it now: its last analysis carried through what was logged since.
-Result<StartingState> from_book(const analysis::Book& book, const LastAnalysis& last, const Shop& shop) {
+Result<StartingState> from_book(const analysis::Book& book, const LastAnalysis& last, const Shop& shop,
+                                std::optional<std::chrono::sys_days> today) {
   const analysis::Carried& carried = *book.carried;
   bath::TankState state{carried.component_mol, carried.volume_L, last.temperature};
   constexpr int most_rounds = 60;
@@ -43,7 +46,25 @@ Result<StartingState> from_book(const analysis::Book& book, const LastAnalysis& 
                              (counted == 1 ? " entry logged since" : " entries logged since");
   std::vector<std::string> left_out;
   for (const std::string& one : carried.not_counted) left_out.push_back("Not in the book: " + one + ".");
-  return StartingState{std::move(state), {from, last.temperature, solved->pH(), left_out}};
+  return StartingState{std::move(state), {from, last.temperature, solved->pH(), left_out}, today};
+}
+
+/// Of "2026-03-02T05:40:00" or "2026-03-02 05:40".
+std::optional<std::chrono::sys_days> date_of(const std::string& time) {
+  const auto midnight = logbook::utc_from_iso(time.substr(0, std::size("2026-03-02") - 1) + "T00:00:00.000Z");
+  if (!midnight) return std::nullopt;
+  return std::chrono::floor<std::chrono::days>(*midnight);
+}
+
+/// The date `hours` ago, by the clock of the log's shop.
+Result<std::optional<std::chrono::sys_days>> date_before(const Session& session, double hours) {
+  const auto log = open_log_to_read(session);
+  if (!log) return log.problems();
+  const auto calendar = calendar_of(*log);
+  if (!calendar) return calendar.problems();
+  const auto then = wall_clock().utc_now() - std::chrono::round<std::chrono::milliseconds>(
+                                                 std::chrono::duration<double, std::ratio<3600>>(hours));
+  return date_of(sheets::local_time(logbook::iso_utc(then), *calendar));
 }
 
 /// What the log has of the tank up to these readings; without any, up to now.
@@ -138,7 +159,8 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
     if (!analysed) return analysed.problems();
     const analysis::Analysis& a = analysed->analysis;
     return StartingState{a.state,
-                         {"readings of " + readings_path, a.temperature, a.pH, analysed->changed_since}};
+                         {"readings of " + readings_path, a.temperature, a.pH, analysed->changed_since},
+                         date_of(analysed->readings.sampled)};
   }
   const auto last = last_analysis(session, shop.tank.name);
   if (!last) return last.problems();
@@ -147,7 +169,10 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
     if (!book) return book.problems();
     constexpr double oldest_days = 31;  // beyond it what nobody logged outweighs what was
     const double days = *book ? (*book)->hours / 24 : 0;
-    if (*book && (*book)->book.carried && days <= oldest_days) return from_book((*book)->book, **last, shop);
+    const bool carried = *book && (*book)->book.carried && days <= oldest_days;
+    const auto day = date_before(session, carried ? 0 : 24 * days);
+    if (!day) return day.problems();
+    if (carried) return from_book((*book)->book, **last, shop, *day);
     const std::string age = days <= oldest_days ? ""
                                                 : ", " + std::to_string(std::lround(days)) +
                                                       " days old: too old to be carried through the log";
@@ -155,7 +180,8 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
     if (!state) return state.problems();
     return StartingState{*std::move(state),
                          {"analysis of " + (*last)->book.from + age, (*last)->temperature, *(*last)->book.pH,
-                          (*last)->changed_since}};
+                          (*last)->changed_since},
+                         *day};
   }
   auto state = bath::state_at_aims(shop.tank, shop.chemistry);
   if (!state) return state.problems();
@@ -168,7 +194,19 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
   }
   return StartingState{
       *std::move(state),
-      {"as at its aims and at the mark; no readings and no log were given", shop.tank.temperature, pH, {}}};
+      {"as at its aims and at the mark; no readings and no log were given", shop.tank.temperature, pH, {}},
+      std::nullopt};
+}
+
+Result<forecast::Policy> policy_from(const StartingState& start, const std::string& file,
+                                     const bath::BathType& type) {
+  auto policy = shopfiles::read_policy(file, type);
+  if (policy && start.day) {
+    forecast::Policy dated = *std::move(policy);
+    dated.calendar = dated.calendar.starting(*start.day);
+    return dated;
+  }
+  return policy;
 }
 
 }  // namespace bathwright::work

@@ -1,7 +1,10 @@
 // The state a verb starts from: today's readings, else the book of the log, else the tank's aims.
 #pragma once
 
+#include <bathwright/forecast/policy.hpp>
 #include <bathwright/sheets/tank_sheet.hpp>
+#include <chrono>
+#include <optional>
 
 #include "shift_log.hpp"
 #include "shop.hpp"
@@ -11,10 +14,15 @@ namespace bathwright::work {
 struct StartingState {
   bath::TankState state;
   sheets::StateRead read;
+  std::optional<std::chrono::sys_days> day;  ///< on which it was so, by the shop's clock; aims have none
 };
 
 Result<StartingState> starting_state(const Session& session, const Shop& shop,
                                      const std::string& readings_path);
+
+/// A policy file, its calendar counted from the day of the state where that is known. Fails as read_policy().
+Result<forecast::Policy> policy_from(const StartingState& start, const std::string& file,
+                                     const bath::BathType& type);
 
 /// Readings worked out, with the last logged analysis as the book.
 struct Analysed {

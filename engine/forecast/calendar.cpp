@@ -3,6 +3,15 @@
 
 namespace bathwright::forecast {
 
+Calendar Calendar::starting(std::chrono::sys_days day) const {
+  Calendar moved = *this;
+  if (starts)
+    for (Closed& one : moved.closed) one.first_day -= static_cast<int>((day - *starts).count());
+  moved.first_weekday = static_cast<int>(std::chrono::weekday(day).iso_encoding()) - 1;
+  moved.starts = day;
+  return moved;
+}
+
 bool Calendar::works_on(int day) const {
   constexpr int days_a_week = 7;
   for (const Closed& one : closed)

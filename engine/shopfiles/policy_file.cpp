@@ -85,7 +85,7 @@ class Reader {
       if (calendar->has("first_weekday"))
         calendar->report("first_weekday", "is known from the date of the first day", "one of the two",
                          "Remove it.");
-      c.first_weekday = static_cast<int>(std::chrono::weekday(*c.starts).iso_encoding()) - 1;
+      c = c.starting(*c.starts);
     }
     for (Table& closed :
          calendar->tables({"closed", optional, R"([{ from = "2026-08-03", to = "2026-08-14" }])"}))

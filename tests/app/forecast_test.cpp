@@ -1,5 +1,8 @@
 // The forecast as a script sees it.
+#include <fmt/format.h>
+
 #include <catch2/catch.hpp>
+#include <chrono>
 
 #include "program.hpp"
 
@@ -31,6 +34,29 @@ TEST_CASE("a forecast says when each limit is met, and keeps its balance", "[uni
     CHECK(std::abs(residual.get<double>()) < 1e-10);
   }
   CHECK(bench.run(files + "--samples 20 --json").out == bench.run(files + "--samples 20 --json").out);
+}
+
+TEST_CASE("a forecast from readings counts its days from the day of the sample", "[unit][app]") {
+  const Bench bench;
+  const std::string baths = PROJECT_DIR "/baths/";
+  CHECK(bench.read(baths + "policies/n-07.toml").find("starts = \"2026-01-05\"") != std::string::npos);
+  CHECK(bench.read(baths + "readings/n-07-morning.toml").find("sampled = 2026-03-02") != std::string::npos);
+  const std::string line = "forecast " + baths + "n-07.toml " + baths + "policies/n-07.toml --samples 0 ";
+  const std::string readings = "--readings " + baths + "readings/n-07-morning.toml";
+  CHECK(bench.run(line).out.find("days from 5 Jan 2026") != std::string::npos);
+  CHECK(bench.run(line + readings).out.find("days from 2 Mar 2026") != std::string::npos);
+  int dated = 0;
+  const auto doc = bench.run(line + readings + " --json").json();
+  for (const auto& limit : doc.at("limits")) {
+    if (!limit.at("day").is_number()) continue;
+    const auto day = std::chrono::days(static_cast<int>(limit.at("day").get<double>()));
+    const std::chrono::year_month_day date = std::chrono::sys_days(std::chrono::year(2026) / 3 / 2) + day;
+    CHECK(limit.at("date").get<std::string>() == fmt::format("{}-{:02}-{:02}", static_cast<int>(date.year()),
+                                                             static_cast<unsigned>(date.month()),
+                                                             static_cast<unsigned>(date.day())));
+    ++dated;
+  }
+  CHECK(dated > 0);
 }
 
 TEST_CASE("a policy that is none is told where", "[failure][app]") {

@@ -1,14 +1,13 @@
 #include "desk.hpp"
 
 #include <algorithm>
-#include <array>
 #include <bathwright/charts/page_file.hpp>
 #include <bathwright/sheets/hand_over_sheet.hpp>
+#include <bathwright/sheets/log_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/page_pdf.hpp>
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
-#include <ctime>
 
 #include "views.hpp"
 #include "work/constants.hpp"
@@ -23,13 +22,11 @@
 namespace bathwright::desktop {
 namespace {
 
-/// Now, as a readings file writes it.
-std::string local_now() {
-  const std::time_t now = std::time(nullptr);
-  std::tm parts{};
-  localtime_r(&now, &parts);
-  std::array<char, 32> text{};
-  return std::strftime(text.data(), text.size(), "%Y-%m-%dT%H:%M:%S", &parts) > 0 ? text.data() : "";
+/// Now by the shop's clock (UTC where no shifts are set, as the log reads it), as a readings file writes it.
+std::string now_in_shop(const std::optional<shifts::Calendar>& calendar) {
+  std::string time = sheets::local_time(logbook::iso_utc(work::wall_clock().utc_now()), calendar);
+  std::ranges::replace(time, ' ', 'T');
+  return time + ":00";
 }
 
 bool nothing_typed(const Draft& draft) {
@@ -160,7 +157,7 @@ void Desk::handle(const Intent& intent) {
                    if (open.tank != open_) open_tank(open.tank);
                  },
                  [&](const TypeReading& typed) {
-                   if (draft_) draft_->type(typed, local_now()), draft_changed();
+                   if (draft_) draft_->type(typed, now_in_shop(log_.calendar)), draft_changed();
                  },
                  [&](const ChooseMethod& chosen) {
                    if (draft_) draft_->choose(chosen), draft_changed();
@@ -572,6 +569,7 @@ void Desk::show() {
                    units_.temperature(tank()->idle_temperature.v) + " at rest";
   const Worked* worked = worked_ ? &*worked_ : nullptr;
   view_.readings = draft_ ? readings_view(draft_->now(), line_of_row_, worked, units_) : ReadingsView{};
+  if (!log_.calendar && !view_.readings.sampled.empty()) view_.readings.sampled += " UTC";
   view_.readings.can_undo = draft_ && draft_->can_undo();
   view_.readings.can_redo = draft_ && draft_->can_redo();
   view_.readings.working = tank_job_.working();

@@ -1,6 +1,5 @@
 #include "forecast_work.hpp"
 
-#include <bathwright/shopfiles/policy_file.hpp>
 #include <thread>
 
 namespace bathwright::desktop {
@@ -37,12 +36,12 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
     shop_file_ = question.tank_file;
   }
   const work::Shop& shop = *shop_;
-  const auto read = shopfiles::read_policy(question.policy_file.string(), shop.type());
+  const auto start = work::starting_state(question.session, shop, question.readings_file.string());
+  if (!start) return fail(start.problems());
+  const auto read = work::policy_from(*start, question.policy_file.string(), shop.type());
   if (!read) return fail(read.problems());
   told.levers = question.levers.value_or(levers_of(*read));
   const auto policy = moved(*read, told.levers);
-  const auto start = work::starting_state(question.session, shop, question.readings_file.string());
-  if (!start) return fail(start.problems());
   const auto forecast = forecast::Forecast::prepare(shop.tank, shop.chemistry, policy);
   if (!forecast) return fail(forecast.problems());
   const auto run = forecast->run(start->state);

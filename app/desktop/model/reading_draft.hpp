@@ -24,7 +24,7 @@ struct DraftRow {
 };
 
 struct Draft {
-  std::string sampled;  ///< local time the first reading was typed, "2026-03-02T05:40:00"
+  std::string sampled;  ///< when the first reading was typed, by the shop's clock, "2026-03-02T05:40:00"
   std::string volume, temperature, pH;
   std::vector<DraftRow> rows;
   bool operator==(const Draft&) const = default;

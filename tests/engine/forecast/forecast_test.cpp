@@ -1,4 +1,6 @@
 // Build-up against closed forms, scenarios of the trade and the laws of conservation.
+#include <chrono>
+
 #include "shop.hpp"
 
 using namespace forecast_test;
@@ -89,6 +91,23 @@ TEST_CASE("a shut shop loses nothing", "[unit][forecast]") {
   const auto run = must(shop.ready().run(shop.start));
   CHECK(level(run, 30, 0) == Approx(level(run, 0, 0)).epsilon(1e-12));
   CHECK(run.days.back().drag_out_L == 0);
+}
+
+TEST_CASE("a calendar counted from another day keeps its weekdays and what is shut", "[unit][forecast]") {
+  using namespace std::chrono_literals;
+  forecast::Calendar undated;
+  undated.days_per_week = 5;
+  auto dated = undated.starting(2026y / 1 / 5);  // a Monday
+  CHECK(dated.first_weekday == 0);
+  dated.closed = {{24, 2}};  // 29 and 30 January, a Thursday and a Friday
+  const auto later = dated.starting(2026y / 1 / 28);
+  CHECK(later.first_weekday == 2);
+  CHECK(later.date(0) == 2026y / 1 / 28);
+  for (int day = 0; day < 40; ++day) CHECK(later.works_on(day) == dated.works_on(day + 23));
+  CHECK_FALSE(later.works_on(1));
+  undated.closed = {{1, 1}};
+  CHECK_FALSE(undated.starting(2026y / 1 / 28).works_on(1));
+  CHECK(undated.starting(2026y / 1 / 28).works_on(5));
 }
 
 TEST_CASE("samples are the same whatever the threads, and stop when told", "[unit][forecast]") {

@@ -37,6 +37,9 @@ struct Calendar {
   std::vector<Closed> closed;                     ///< holidays, shutdowns
   std::optional<std::chrono::sys_days> starts{};  ///< date of day 0, where the policy gives one
 
+  /// The same calendar with `day` as day 0: weekdays follow its date, and what is shut stays where it is
+  /// where the calendar has dates, else counts from the new day 0.
+  [[nodiscard]] Calendar starting(std::chrono::sys_days day) const;
   [[nodiscard]] bool works_on(int day) const;
   [[nodiscard]] std::optional<std::chrono::year_month_day> date(int day) const;
   [[nodiscard]] double worked_h_per_day() const;  ///< of a day that works, at most 24
