@@ -597,6 +597,7 @@ void Desk::show() {
   }
   view_.shift = shift_view(log_, work::wall_clock().utc_now());
   view_.log = log_view(log_);
+  view_.log.more_below = log_.entries.size() >= most_entries;
   view_.log.filter = filter_;
   view_.log.file = session_.log_file;
   view_.log.shown = shown_entry_;

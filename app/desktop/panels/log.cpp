@@ -65,6 +65,8 @@ void draw_log(const LogView& view, PanelState& state, const Look& look, Intents&
                     : "No entry has that text.");
     return;
   }
+  if (view.more_below)
+    quiet(look, "The newest " + std::to_string(view.rows.size()) + "; type to find an older one.");
   draw_rows(view, look, out);
   if (view.shown_text.empty()) return;
   heading(look, "Entry " + std::to_string(view.shown));

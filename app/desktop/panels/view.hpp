@@ -145,6 +145,7 @@ struct ShiftView {
 
 struct LogView {
   std::vector<LogRow> rows;  ///< newest first
+  bool more_below = false;   ///< the log has older ones that are not shown
   std::string filter, file;
   std::int64_t shown = 0;
   std::vector<std::string> shown_text;
