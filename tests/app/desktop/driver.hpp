@@ -9,6 +9,7 @@
 #include "display.hpp"
 #include "model/desk.hpp"
 #include "panels/panels.hpp"
+#include "screen.hpp"
 #include "window/window.hpp"
 
 namespace desktop_test {
@@ -58,8 +59,7 @@ class Driver {
   /// Scrolls until the thing is in sight. Throws where it is not drawn.
   void bring_into_sight(const std::string& name, const std::string& list = {});
 
-  /// Pixels of the window that have exactly this colour.
-  [[nodiscard]] int pixels_of(bathwright::charts::Colour colour) const;
+  [[nodiscard]] Shot shot() const;
   /// The window as a PNG.
   void save(const std::filesystem::path& file) const;
 
@@ -67,7 +67,6 @@ class Driver {
   [[nodiscard]] const bathwright::desktop::DeskView& view() const { return desk_->view(); }
 
  private:
-  struct Screen;
   void press(const std::string& name, double share);
   void move_to(double x, double y);
   void button(unsigned which, bool down);
