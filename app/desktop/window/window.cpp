@@ -92,6 +92,16 @@ struct Window::Open {
   bool dark = false, new_look = false;
   std::string renderer;
   int pictures_due = pictures_after_input;
+  bool enter_down = false, enter_is_press = false;
+
+  /// Enter presses what Space presses, but the Enter that ends the typing in a field does no more than that.
+  void enter_presses() {
+    ImGuiIO& io = ImGui::GetIO();
+    const bool down = io.KeysDown[GLFW_KEY_ENTER] || io.KeysDown[GLFW_KEY_KP_ENTER];
+    if (down && !enter_down) enter_is_press = !io.WantTextInput;
+    enter_down = down;
+    if (enter_down && enter_is_press) io.NavInputs[ImGuiNavInput_Activate] = 1;
+  }
 
   ~Open() {
     if (context) {
@@ -156,6 +166,7 @@ bool Window::picture(const std::function<void()>& draw) {
   }
   ImGui_ImplOpenGL3_NewFrame();
   ImGui_ImplGlfw_NewFrame();
+  open.enter_presses();
   ImGui::NewFrame();
   draw();
   ImGui::Render();

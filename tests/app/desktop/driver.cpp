@@ -170,21 +170,84 @@ void Driver::click(const std::string& name, const std::string& list) {
 }
 
 void Driver::key(unsigned long keysym, bool with_ctrl) {
-  const bool shifted = screen_->is_shifted(keysym);
   if (with_ctrl) screen_->key(XK_Control_L, true);
-  if (shifted) screen_->key(XK_Shift_L, true);
   screen_->key(keysym, true);
   screen_->flush();
-  if (with_ctrl) picture();  // a shortcut is looked for once a picture
+  picture();  // what a key does beyond its letter is looked for once a picture
   screen_->key(keysym, false);
-  if (shifted) screen_->key(XK_Shift_L, false);
   if (with_ctrl) screen_->key(XK_Control_L, false);
   screen_->flush();
   picture();
 }
 
+std::string Driver::focused() const {
+  const auto focus = places_.find(desktop::the_focus);
+  if (focus == places_.end()) return {};
+  const auto same = [&](const ImVec4& other) {
+    return other.x == focus->second.x && other.y == focus->second.y && other.z == focus->second.z &&
+           other.w == focus->second.w;
+  };
+  for (const auto& [name, place] : places_)
+    if (name != desktop::the_focus && same(place)) return name;
+  return {};
+}
+
+bool Driver::focus_is_seen() const {
+  const auto focus = places_.find(desktop::the_focus);
+  if (focus == places_.end()) return false;
+  const ImVec4 place = focus->second;
+  const Shot now = shot();
+  const auto width = static_cast<int>(place.z - place.x);
+  for (int away = 0; away < 6; ++away) {
+    const int y = static_cast<int>(place.y) - away;
+    int ringed = 0;
+    for (int x = static_cast<int>(place.x); x < static_cast<int>(place.z); ++x)
+      ringed += now.is(x, y, palette(window_->dark()).accent) ? 1 : 0;
+    if (ringed > width * 9 / 10) return true;
+  }
+  return false;
+}
+
+void Driver::walk_to(const std::string& name) {
+  constexpr int most = 150;
+  for (int i = 0; i < most && focused() != name; ++i) {
+    if (!places_.contains(name)) throw std::runtime_error("\"" + name + "\" is not drawn");
+    const ImVec4 to = places_.at(name);
+    const auto focus = places_.find(desktop::the_focus);
+    const ImVec4 at = focus == places_.end() ? ImVec4{} : focus->second;
+    const float middle = (to.y + to.w) / 2;
+    key(middle > at.w ? XK_Down : middle < at.y ? XK_Up : at.x < to.x ? XK_Right : XK_Left);
+    picture();
+  }
+  if (focused() != name) throw lost(name);
+}
+
+void Driver::tab_to(const std::string& name) {
+  constexpr int most = 40;
+  for (int i = 0; i < most && focused() != name; ++i) {
+    key(XK_Tab);
+    picture();
+  }
+  if (focused() != name) throw lost(name);
+}
+
+std::runtime_error Driver::lost(const std::string& name) const {
+  save(std::filesystem::temp_directory_path() / "no-focus.png");
+  return std::runtime_error("the focus does not come to \"" + name + "\" and is at \"" + focused() +
+                            "\": no-focus.png has the window");
+}
+
 void Driver::type(const std::string& text) {
-  for (const char c : text) key(static_cast<unsigned char>(c));  // Latin-1 is its own keysym
+  for (const char c : text) {
+    const auto letter = static_cast<unsigned char>(c);  // Latin-1 is its own keysym
+    const bool shifted = screen_->is_shifted(letter);
+    if (shifted) screen_->key(XK_Shift_L, true);
+    screen_->key(letter, true);
+    screen_->key(letter, false);
+    if (shifted) screen_->key(XK_Shift_L, false);
+    screen_->flush();
+    picture();
+  }
 }
 
 void Driver::put(const std::string& name, const std::string& text) {

@@ -3,6 +3,7 @@
 
 #include <functional>
 #include <memory>
+#include <stdexcept>
 #include <string>
 #include <vector>
 
@@ -56,6 +57,14 @@ class Driver {
   /// Clicks into a field, whose whole text is then selected, and types.
   void put(const std::string& name, const std::string& text);
   void key(unsigned long keysym, bool with_ctrl = false);
+  /// The thing that has the keyboard's focus and shows it; empty where none does.
+  [[nodiscard]] std::string focused() const;
+  /// Whether a line in the accent's colour runs above what has the focus.
+  [[nodiscard]] bool focus_is_seen() const;
+  /// Leads the focus there with the arrow keys, as somebody does who sees it. Throws where it does not come.
+  void walk_to(const std::string& name);
+  /// Presses Tab until the field has the focus. Throws where it does not come.
+  void tab_to(const std::string& name);
   /// Scrolls until the thing is in sight. Throws where it is not drawn.
   void bring_into_sight(const std::string& name, const std::string& list = {});
 
@@ -71,6 +80,7 @@ class Driver {
   void move_to(double x, double y);
   void button(unsigned which, bool down);
   void draw(bathwright::desktop::Intents& intents);
+  [[nodiscard]] std::runtime_error lost(const std::string& name) const;
 
   Display display_;
   std::unique_ptr<bathwright::desktop::Desk> desk_;

@@ -13,10 +13,23 @@
 
 namespace desktop_test {
 
+namespace {
+
+std::uint32_t pixel(bathwright::charts::Colour colour) {
+  return (static_cast<std::uint32_t>(colour.red) << 16) | (static_cast<std::uint32_t>(colour.green) << 8) |
+         colour.blue;
+}
+
+}  // namespace
+
+bool Shot::is(int x, int y, bathwright::charts::Colour colour) const {
+  return x >= 0 && x < width && y >= 0 && y < height &&
+         pixels[static_cast<std::size_t>(y) * static_cast<std::size_t>(width) +
+                static_cast<std::size_t>(x)] == pixel(colour);
+}
+
 int Shot::count(bathwright::charts::Colour colour) const {
-  const std::uint32_t wanted = (static_cast<std::uint32_t>(colour.red) << 16) |
-                               (static_cast<std::uint32_t>(colour.green) << 8) | colour.blue;
-  return static_cast<int>(std::ranges::count(pixels, wanted));
+  return static_cast<int>(std::ranges::count(pixels, pixel(colour)));
 }
 
 Shot Shot::foot(int rows) const {

@@ -16,6 +16,7 @@ struct Shot {
   int width = 0, height = 0;
   std::vector<std::uint32_t> pixels;
 
+  [[nodiscard]] bool is(int x, int y, bathwright::charts::Colour colour) const;
   [[nodiscard]] int count(bathwright::charts::Colour colour) const;
   /// The lowest rows of it.
   [[nodiscard]] Shot foot(int rows) const;
