@@ -79,7 +79,9 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
   std::optional<Part> lost;
   const auto panel = [&](const char* name, ImVec2 size, std::optional<Part> part, const auto& draw) {
     ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {look.px(12), look.px(8)});
+    ImGui::PushStyleColor(ImGuiCol_Border, colour(look.palette.rule));
     ImGui::BeginChild(name, size, true);
+    ImGui::PopStyleColor();
     ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {look.px(8), look.px(4)});
     if (state.go_to_part && state.part == part) ImGui::SetKeyboardFocusHere();
     draw();
