@@ -11,7 +11,7 @@ Outcome run(const work::Session& session, const std::filesystem::path& shop) {
   auto opened = Window::open({.scale = desk.settings().scale, .dark = desk.settings().dark});
   if (!opened) return opened.problems();
   Window window = *std::move(opened);
-  desk.drawn_by(window.renderer() + (window.software() ? ", drawn in software" : ""));
+  desk.drawn_by(window.drawn_by());
   PanelState state;
   Intents intents;
   window.run([&] {

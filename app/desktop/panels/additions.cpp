@@ -24,7 +24,8 @@ void draw_amounts(const AdditionsView& view, const Look& look, Intents& out) {
     ImGui::TextUnformatted(row.unit.c_str());
     ImGui::SameLine(look.px(120));
     ImGui::SetNextItemWidth(-1);
-    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, ""))
+    if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, "",
+                            ImGuiSliderFlags_NoInput))  // the field beside it is for typing
       changed = true;
     note_place(look, "slider " + row.chemical);
     if (changed) out.emplace_back(DragAmount{static_cast<int>(i), std::max(0.0, amount)});
@@ -83,11 +84,12 @@ void draw_additions(const AdditionsView& view, PanelState& state, const Look& lo
       out.emplace_back(ChoosePlan{static_cast<int>(i)});
     note_place(look, "plan " + std::to_string(i + 1));
   }
-  if (view.edited) {
-    said(look, look.palette.act, "amounts changed by hand");
-    ImGui::SameLine();
-    if (button(look, "Back to the plan")) out.emplace_back(BackToPlan{});
-  }
+  // Always a line, so that nothing moves under the pointer that drags.
+  ImGui::AlignTextToFramePadding();
+  said(look, view.edited ? look.palette.act : look.palette.quiet,
+       view.edited ? "amounts changed by hand" : "amounts as planned");
+  ImGui::SameLine(look.px(200));
+  if (button(look, "Back to the plan", view.edited)) out.emplace_back(BackToPlan{});
   draw_amounts(view, look, out);
   draw_add(view, state, look, out);
   if (!view.chance.empty()) quiet(look, view.chance);

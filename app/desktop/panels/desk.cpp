@@ -6,14 +6,11 @@ namespace {
 constexpr float pages_high = 40, rail = 190, strip = 70, status = 24, chemistry = 330;
 constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoDecoration | ImGuiWindowFlags_NoMove |
                                    ImGuiWindowFlags_NoBringToFrontOnFocus | ImGuiWindowFlags_NoSavedSettings;
-constexpr std::pair<PageName, const char*> pages[] = {
-    {PageName::shift, "The shift"}, {PageName::forecast, "Forecast"},   {PageName::trends, "Trends"},
-    {PageName::log, "Log"},         {PageName::hand_over, "Hand over"}, {PageName::bath_types, "Bath types"},
-    {PageName::people, "People"},   {PageName::settings, "Settings"}};
 
 /// The pages as words; the one that is open is underlined.
-void draw_pages(const DeskView& view, const Look& look, Intents& out) {
+void draw_pages(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
   ImGui::SetCursorPos({look.px(rail), look.px(6)});
+  if (state.go_to_part && state.part == Part::pages) ImGui::SetKeyboardFocusHere();
   for (const auto& [page, words] : pages) {
     const bool open = page == view.page;
     ImGui::PushFont(open ? look.fonts.bold : look.fonts.body);
@@ -28,21 +25,8 @@ void draw_pages(const DeskView& view, const Look& look, Intents& out) {
                                                 packed(look.palette.accent));
     ImGui::SameLine(0, look.px(4));
   }
-  ImGui::NewLine();
-}
-
-/// Ctrl and a figure opens a page, Ctrl and an arrow the next tank, Ctrl Z takes the last typing back.
-void keys(const DeskView& view, Intents& out) {
-  const ImGuiIO& io = ImGui::GetIO();
-  if (!io.KeyCtrl) return;
-  for (int i = 0; i < static_cast<int>(std::size(pages)); ++i)
-    if (ImGui::IsKeyPressed('1' + i, false)) out.emplace_back(GoTo{pages[i].first});
-  if (ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_DownArrow)))
-    out.emplace_back(OpenTank{view.line.selected + 1});
-  if (ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_UpArrow)))
-    out.emplace_back(OpenTank{view.line.selected - 1});
-  if (!io.WantTextInput && ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_Z), false))
-    out.emplace_back(UndoTyping{});
+  ImGui::SetCursorPosX(ImGui::GetWindowWidth() - look.px(80));
+  if (button(look, "F1 keys")) state.key_list = true;
 }
 
 void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
@@ -55,6 +39,7 @@ void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intent
   if (view.slip.number != 0) {
     draw_slip(view.slip, view.sign, state, look, out);
   } else {
+    state.slip = 0;
     draw_additions(view.additions, state, look, out);
     draw_sign(view.sign, view.additions, state, look, out);
   }
@@ -84,38 +69,47 @@ void draw_page(const DeskView& view, PanelState& state, const Look& look, Intent
 }  // namespace
 
 void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
-  keys(view, out);
+  keys(view, state, out);
   const ImVec2 all = ImGui::GetIO().DisplaySize;
   ImGui::SetNextWindowPos({0, 0});
   ImGui::SetNextWindowSize(all);
   ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {0, 0});
   ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {0, 0});
   ImGui::Begin("desk", nullptr, fixed);
-  const auto panel = [&](const char* name, ImVec2 size, const auto& draw) {
+  std::optional<Part> lost;
+  const auto panel = [&](const char* name, ImVec2 size, std::optional<Part> part, const auto& draw) {
     ImGui::PushStyleVar(ImGuiStyleVar_WindowPadding, {look.px(12), look.px(8)});
+    ImGui::PushStyleColor(ImGuiCol_Border, colour(look.palette.rule));
     ImGui::BeginChild(name, size, true);
+    ImGui::PopStyleColor();
     ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {look.px(8), look.px(4)});
+    if (state.go_to_part && state.part == part) ImGui::SetKeyboardFocusHere();
     draw();
+    if (part && focus_lost()) lost = part;
     ImGui::PopStyleVar();
     ImGui::EndChild();
     ImGui::PopStyleVar();
   };
   if (view.first_start) {
-    panel("first", all, [&] { draw_first_start(view, state, look, out); });
+    panel("first", all, {}, [&] {
+      if (ImGui::IsWindowAppearing()) ImGui::SetKeyboardFocusHere();
+      draw_first_start(view, state, look, out);
+    });
   } else {
-    draw_pages(view, look, out);
+    draw_pages(view, state, look, out);
     const bool with_chemistry = view.page == PageName::shift;
     const float top = look.px(pages_high), body = all.y - top - look.px(strip + status), left = look.px(rail),
                 right = with_chemistry ? look.px(chemistry) : 0;
     ImGui::SetCursorPos({0, top});
-    panel("line", {left, body}, [&] { draw_line(view.line, look, out); });
+    panel("line", {left, body}, Part::line, [&] { draw_line(view.line, look, out); });
     ImGui::SameLine(0, 0);
-    panel("page", {all.x - left - right, body}, [&] { draw_page(view, state, look, out); });
+    panel("page", {all.x - left - right, body}, Part::page, [&] { draw_page(view, state, look, out); });
     if (with_chemistry) {
       ImGui::SameLine(0, 0);
-      panel("chemistry", {right, body}, [&] { draw_chemistry(view.chemistry, view.source, look, out); });
+      panel("chemistry", {right, body}, Part::chemistry,
+            [&] { draw_chemistry(view.chemistry, view.source, look, out); });
     }
-    panel("shift", {all.x, look.px(strip)}, [&] { draw_shift(view.shift, look, out); });
+    panel("shift", {all.x, look.px(strip)}, {}, [&] { draw_shift(view.shift, look, out); });
     ImGui::SetCursorPosX(look.px(12));
     const std::string words = view.status.log + "     " + view.status.renderer + "     " + view.status.doing;
     if (!view.fault.empty())
@@ -125,8 +119,11 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     else
       quiet(look, words);
   }
-  ImGui::End();
+  state.go_to_part = lost.has_value();
+  state.part = lost.value_or(state.part);
   ImGui::PopStyleVar(2);
+  draw_key_list(state, look);
+  ImGui::End();
 }
 
 }  // namespace bathwright::desktop

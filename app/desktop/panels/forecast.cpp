@@ -68,7 +68,7 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
     return;
   }
   const float side = look.px(380);
-  ImGui::BeginChild("levers", {side, 0}, false);
+  ImGui::BeginChild("levers", {side, 0}, false, ImGuiWindowFlags_NavFlattened);
   quiet(look, view.from);
   ImGui::AlignTextToFramePadding();
   ImGui::TextUnformatted("policy");
@@ -107,7 +107,7 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
   for (const std::string& note : view.notes) quiet(look, note);
   ImGui::EndChild();
   ImGui::SameLine(0, look.px(16));
-  ImGui::BeginChild("charts", {0, 0}, false);
+  ImGui::BeginChild("charts", {0, 0}, false, ImGuiWindowFlags_NavFlattened);
   if (view.charts.empty()) quiet(look, view.working ? "working out ..." : "nothing to show yet");
   draw_charts(view, look);
   ImGui::EndChild();

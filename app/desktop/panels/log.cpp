@@ -57,6 +57,7 @@ void draw_log(const LogView& view, PanelState& state, const Look& look, Intents&
   ImGui::SetNextItemWidth(look.px(260));
   if (ImGui::InputTextWithHint("##filter", "find in what, by or shift", &state.filter))
     out.emplace_back(FilterLog{state.filter});
+  note_place(look, "filter");
   ImGui::SameLine();
   if (button(look, "Copy the rows")) ImGui::SetClipboardText(rows_as_text(view).c_str());
   if (view.rows.empty()) {

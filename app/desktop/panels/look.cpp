@@ -76,6 +76,8 @@ void note_place(const Look& look, const std::string& name) {
   if (!look.places) return;
   const ImVec2 low = ImGui::GetItemRectMin(), high = ImGui::GetItemRectMax();
   (*look.places)[name] = {low.x, low.y, high.x, high.y};
+  if (ImGui::IsItemFocused() && ImGui::GetIO().NavVisible)
+    (*look.places)[the_focus] = {low.x, low.y, high.x, high.y};
 }
 
 void note_window(const Look& look, const std::string& name) {
@@ -93,10 +95,12 @@ bool button(const Look& look, const char* label, bool ready) {
 }
 
 bool main_button(const Look& look, const char* label, bool ready) {
-  ImGui::PushStyleColor(ImGuiCol_Button, colour(look.palette.accent));
+  // Not the pale ground of other buttons under the pointer or the focus: the letters are pale.
+  for (const ImGuiCol ground : {ImGuiCol_Button, ImGuiCol_ButtonHovered, ImGuiCol_ButtonActive})
+    ImGui::PushStyleColor(ground, colour(look.palette.accent));
   ImGui::PushStyleColor(ImGuiCol_Text, colour(look.palette.card));
   const bool pressed = button(look, label, ready);
-  ImGui::PopStyleColor(2);
+  ImGui::PopStyleColor(4);
   return pressed;
 }
 

@@ -16,6 +16,8 @@ namespace bathwright::desktop {
 
 /// Where things were drawn in this picture, by name: for tests that use mouse and keys as a person does.
 using Places = std::map<std::string, ImVec4>;
+/// Under this name the one that has the keyboard's focus and shows it.
+inline constexpr const char* the_focus = "the focus";
 
 struct Look {
   const Fonts& fonts;

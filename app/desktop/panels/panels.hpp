@@ -2,6 +2,9 @@
 // out.
 #pragma once
 
+#include <optional>
+#include <utility>
+
 #include "intent.hpp"
 #include "look.hpp"
 #include "view.hpp"
@@ -23,12 +26,23 @@ struct SignerState {
   std::string name, pin, second_pin;
 };
 
+/// What F6 leads through.
+enum class Part : std::uint8_t { pages, line, page, chemistry };
+
+inline constexpr std::pair<PageName, const char*> pages[] = {
+    {PageName::shift, "The shift"}, {PageName::forecast, "Forecast"},   {PageName::trends, "Trends"},
+    {PageName::log, "Log"},         {PageName::hand_over, "Hand over"}, {PageName::bath_types, "Bath types"},
+    {PageName::people, "People"},   {PageName::settings, "Settings"}};
+
 struct PanelState {
   Typing typing;
   SignerState signer;
   std::string filter, folder, reason, new_name, new_pin, zone, file;
   int new_role = 0, pattern = 0, add = 0;
-  std::int64_t asked_entry = 0;
+  std::int64_t slip = 0;  ///< `slip`: the one that was open when last drawn
+  Part part = Part::pages;
+  bool go_to_part = false, key_list = false;
+  std::optional<PageName> awaited;  ///< asked for with the keys: the focus goes there once it is drawn
 };
 
 /// Those who sign, as chosen in the sign panel.
@@ -36,7 +50,7 @@ struct PanelState {
 /// Fields for who signs and the PINs; nothing where the log has no people but the name.
 void draw_signer(const SignView& view, SignerState& state, const Look& look);
 
-/// A chart with the values under the pointer, or at the cursor that the arrow keys move; Enter copies its
+/// A chart with the values under the pointer, or at the line that Shift and the arrows move; Enter copies its
 /// data.
 void draw_plot(const charts::Chart& chart, float width_at_100, float height_at_100, const Look& look);
 
@@ -63,6 +77,14 @@ void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look);
 void draw_people(const DeskView& view, PanelState& state, const Look& look, Intents& out);
 void draw_settings(const DeskView& view, PanelState& state, const Look& look, Intents& out);
 void draw_first_start(const DeskView& view, PanelState& state, const Look& look, Intents& out);
+
+// Without a mouse.
+void keys(const DeskView& view, PanelState& state, Intents& out);
+void draw_key_list(PanelState& state, const Look& look);
+/// The thing of this part that had the focus is not drawn any more.
+[[nodiscard]] bool focus_lost();
+/// Around the last item, where the focus would not be seen.
+void ring(const Look& look);
 
 /// The whole window.
 void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intents& out);

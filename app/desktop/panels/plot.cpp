@@ -1,3 +1,8 @@
+#include <imgui.h>
+// after imgui.h, which it needs
+#include <imgui_internal.h>
+
+#include <algorithm>
 #include <cmath>
 #include <cstdio>
 
@@ -59,7 +64,7 @@ void draw_cursor(const charts::Chart& chart, const charts::Frame& frame, double 
         words += "\n90 % between " + short_figure(band.low[i]) + " and " + short_figure(band.high[i]);
         break;
       }
-  ImGui::SetTooltip("%s\n(Enter or a click copies the data)", words.c_str());
+  ImGui::SetTooltip("%s\n(a click or Enter copies the figures)", words.c_str());
 }
 
 }  // namespace
@@ -74,10 +79,15 @@ void draw_plot(const charts::Chart& chart, float width_at_100, float height_at_1
   float* cursor = ImGui::GetStateStorage()->GetFloatRef(ImGui::GetID("cursor"), 0.5F);
   const bool focused = ImGui::IsItemFocused() && ImGui::GetIO().NavVisible;
   if (focused) {
+    ring(look);
     constexpr float step = 0.02F;
-    if (ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_LeftArrow))) *cursor = std::max(0.0F, *cursor - step);
-    if (ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_RightArrow)))
-      *cursor = std::min(1.0F, *cursor + step);
+    const float way = ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_LeftArrow))    ? -step
+                      : ImGui::IsKeyPressed(ImGui::GetKeyIndex(ImGuiKey_RightArrow)) ? step
+                                                                                     : 0;
+    if (ImGui::GetIO().KeyShift && way != 0) {
+      *cursor = std::clamp(*cursor + way, 0.0F, 1.0F);
+      ImGui::NavMoveRequestCancel();  // the arrow is the line's, the focus stays
+    }
   }
   if (ImGui::IsItemHovered()) {
     const double x = (ImGui::GetIO().MousePos.x - origin.x) / look.scale;

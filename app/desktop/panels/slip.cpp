@@ -12,6 +12,9 @@ void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, co
   quiet(look, view.issued);
   standing(look, static_cast<int>(view.approved_by_second ? charts::State::in_window : charts::State::act),
            view.approved);
+  // The focus was on the button that issued it, which is gone.
+  if (std::exchange(state.slip, view.number) != view.number && ImGui::GetIO().NavVisible)
+    ImGui::SetKeyboardFocusHere();
   draw_signer(sign, state.signer, look);
   const Names names = names_of(sign, state.signer);
   const bool may = !sign.busy && (sign.people.empty() || !names.pin.empty());

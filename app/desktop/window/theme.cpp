@@ -3,9 +3,9 @@
 namespace bathwright::desktop {
 namespace {
 
-constexpr charts::Palette night{{0x16, 0x1B, 0x1F}, {0x1F, 0x26, 0x2B}, {0x3A, 0x44, 0x4B},
-                                {0xE8, 0xEA, 0xE6}, {0xA3, 0xAE, 0xB5}, {0x6F, 0xC3, 0xD6},
-                                {0xC3, 0xA2, 0xDD}, {0xF0, 0xA8, 0x5A}, {0xF2, 0x8B, 0x98}};
+constexpr charts::Palette night{
+    {0x16, 0x1B, 0x1F}, {0x1F, 0x26, 0x2B}, {0x3A, 0x44, 0x4B}, {0xE8, 0xEA, 0xE6}, {0xA3, 0xAE, 0xB5},
+    {0x6F, 0xC3, 0xD6}, {0xAE, 0x86, 0xDE}, {0xF0, 0xA8, 0x5A}, {0xEB, 0x76, 0x86}, {0x7C, 0x87, 0x8E}};
 
 /// `share` of the way from a to b.
 charts::Colour between(charts::Colour a, charts::Colour b, double share) {
@@ -40,15 +40,15 @@ void set_theme(const charts::Palette& p, float scale) {
   style.ScaleAllSizes(scale);
 
   const auto set = [&](ImGuiCol which, charts::Colour c) { style.Colors[which] = colour(c); };
-  const charts::Colour hover = between(p.card, p.accent, 0.12), pressed = between(p.card, p.accent, 0.24);
+  const charts::Colour hover = between(p.card, p.accent, 0.08), pressed = between(p.card, p.accent, 0.14);
   for (const ImGuiCol all : {ImGuiCol_WindowBg, ImGuiCol_MenuBarBg, ImGuiCol_TitleBg, ImGuiCol_ScrollbarBg})
     set(all, p.page);
   for (const ImGuiCol all : {ImGuiCol_ChildBg, ImGuiCol_PopupBg, ImGuiCol_FrameBg, ImGuiCol_Button,
                              ImGuiCol_TableRowBg, ImGuiCol_Tab})
     set(all, p.card);
-  for (const ImGuiCol all : {ImGuiCol_Border, ImGuiCol_Separator, ImGuiCol_TableBorderLight,
-                             ImGuiCol_TableBorderStrong, ImGuiCol_ScrollbarGrab})
+  for (const ImGuiCol all : {ImGuiCol_Separator, ImGuiCol_TableBorderLight, ImGuiCol_TableBorderStrong})
     set(all, p.rule);
+  for (const ImGuiCol all : {ImGuiCol_Border, ImGuiCol_ScrollbarGrab}) set(all, p.edge);
   for (const ImGuiCol all : {ImGuiCol_ButtonHovered, ImGuiCol_FrameBgHovered, ImGuiCol_HeaderHovered,
                              ImGuiCol_TabHovered, ImGuiCol_Header})
     set(all, hover);

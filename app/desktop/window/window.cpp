@@ -52,11 +52,15 @@ std::vector<std::string> own_arguments() {
   return words;
 }
 
-/// Becomes this program again, drawing in software. Returns only where that fails.
+/// Becomes this program again, drawing in software. Returns only where that fails. What chose the driver that
+/// failed is taken back: a driver named in the environment, or a vendor's library in front of Mesa's.
 void start_again_in_software() {
   if (std::getenv(restarted)) return;
   ::setenv(restarted, "1", 1);
   ::setenv("LIBGL_ALWAYS_SOFTWARE", "1", 1);
+  ::setenv("__GLX_VENDOR_LIBRARY_NAME", "mesa", 1);
+  ::unsetenv("GALLIUM_DRIVER");
+  ::unsetenv("MESA_LOADER_DRIVER_OVERRIDE");
   std::vector<std::string> words = own_arguments();
   std::vector<char*> raw;
   for (std::string& word : words) raw.push_back(word.data());
@@ -88,6 +92,16 @@ struct Window::Open {
   bool dark = false, new_look = false;
   std::string renderer;
   int pictures_due = pictures_after_input;
+  bool enter_down = false, enter_is_press = false;
+
+  /// Enter presses what Space presses, but the Enter that ends the typing in a field does no more than that.
+  void enter_presses() {
+    ImGuiIO& io = ImGui::GetIO();
+    const bool down = io.KeysDown[GLFW_KEY_ENTER] || io.KeysDown[GLFW_KEY_KP_ENTER];
+    if (down && !enter_down) enter_is_press = !io.WantTextInput;
+    enter_down = down;
+    if (enter_down && enter_is_press) io.NavInputs[ImGuiNavInput_Activate] = 1;
+  }
 
   ~Open() {
     if (context) {
@@ -152,6 +166,7 @@ bool Window::picture(const std::function<void()>& draw) {
   }
   ImGui_ImplOpenGL3_NewFrame();
   ImGui_ImplGlfw_NewFrame();
+  open.enter_presses();
   ImGui::NewFrame();
   draw();
   ImGui::Render();
@@ -183,9 +198,11 @@ const Fonts& Window::fonts() const { return open_->fonts; }
 float Window::scale() const { return open_->scale; }
 bool Window::dark() const { return open_->dark; }
 GLFWwindow* Window::handle() const { return open_->window; }
-std::string Window::renderer() const { return open_->renderer; }
-bool Window::software() const {
-  return open_->renderer.find("llvmpipe") != std::string::npos || std::getenv(restarted);
+std::string Window::drawn_by() const {
+  if (std::getenv(restarted))
+    return open_->renderer + ", drawn in software: the OpenGL of this machine failed";
+  const bool software = open_->renderer.find("llvmpipe") != std::string::npos;
+  return open_->renderer + (software ? ", drawn in software" : "");
 }
 
 void Window::set_look(float scale, bool dark) {

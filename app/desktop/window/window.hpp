@@ -43,9 +43,8 @@ class Window {
   [[nodiscard]] float scale() const;
   [[nodiscard]] bool dark() const;
   void set_look(float scale, bool dark);  ///< from the next picture on
-  /// "llvmpipe, software": what draws.
-  [[nodiscard]] std::string renderer() const;
-  [[nodiscard]] bool software() const;
+  /// "llvmpipe, drawn in software": what draws, and that the machine's own OpenGL failed where it did.
+  [[nodiscard]] std::string drawn_by() const;
   [[nodiscard]] GLFWwindow* handle() const;
 
  private:

@@ -79,14 +79,14 @@ TEST_CASE("a shift's work at the window", "[desktop][window]") {
   REQUIRE(driver.until([&] { return !driver.view().additions.edited && !driver.desk().working(); }));
 
   // Hypochlorite must not meet an acid nickel bath: refused in words and with the mark of a stop.
-  const int before = driver.pixels_of(charts::day_palette.stop);
+  const int before = driver.shot().count(charts::day_palette.stop);
   driver.click("shelf");
   driver.click("shelf sodium-hypochlorite", "shelf list");
   driver.click("Add it to the list");
   REQUIRE(driver.until([&] { return !driver.view().additions.refused.empty() && !driver.desk().working(); }));
   CHECK_FALSE(driver.view().additions.ready);
   driver.bring_into_sight("refused");
-  CHECK(driver.pixels_of(charts::day_palette.stop) > before);
+  CHECK(driver.shot().count(charts::day_palette.stop) > before);
   driver.click("Issue the slip");
   driver.pictures(5);
   CHECK(driver.view().slip.number == 0);

@@ -1,12 +1,7 @@
 #include "driver.hpp"
 
 #include <GLFW/glfw3.h>
-#include <X11/XKBlib.h>
-#include <X11/Xlib.h>
-#include <X11/Xutil.h>
-#include <X11/extensions/XTest.h>
 #include <X11/keysym.h>
-#include <cairo.h>
 #include <unistd.h>
 
 #include <chrono>
@@ -49,23 +44,6 @@ EmptyHome::~EmptyHome() {
   std::filesystem::remove_all(path_, failed);
 }
 
-/// The X server's side: where false input goes in and pixels come out.
-struct Driver::Screen {
-  ::Display* connection;
-
-  explicit Screen(const std::string& name) : connection(XOpenDisplay(name.c_str())) {
-    if (!connection) throw std::runtime_error("no connection to " + name);
-  }
-  ~Screen() { XCloseDisplay(connection); }
-  Screen(const Screen&) = delete;
-  Screen& operator=(const Screen&) = delete;
-
-  void flush() const {
-    XSync(connection, False);
-    std::this_thread::sleep_for(std::chrono::milliseconds(2));  // on its way to the window
-  }
-};
-
 Driver::Driver(int width, int height, float scale, const std::filesystem::path& shop)
     : display_(width, height), width_(width), height_(height) {
   work::Session session;
@@ -73,7 +51,7 @@ Driver::Driver(int width, int height, float scale, const std::filesystem::path& 
   auto window = desktop::Window::open({.width = width, .height = height, .scale = scale});
   if (!window) throw std::runtime_error(text(window.problems()));
   window_ = std::make_unique<desktop::Window>(*std::move(window));
-  desk_->drawn_by(window_->renderer());
+  desk_->drawn_by(window_->drawn_by());
   screen_ = std::make_unique<Screen>(display_.name());
   pictures(5);
 }
@@ -144,13 +122,13 @@ bool Driver::until(const std::function<bool()>& holds, double seconds) {
 }
 
 void Driver::move_to(double x, double y) {
-  XTestFakeMotionEvent(screen_->connection, -1, static_cast<int>(x), static_cast<int>(y), CurrentTime);
+  screen_->move_to(static_cast<int>(x), static_cast<int>(y));
   screen_->flush();
   picture();
 }
 
 void Driver::button(unsigned which, bool down) {
-  XTestFakeButtonEvent(screen_->connection, which, down ? True : False, CurrentTime);
+  screen_->button(which, down);
   screen_->flush();
   picture();
 }
@@ -198,26 +176,84 @@ void Driver::click(const std::string& name, const std::string& list) {
 }
 
 void Driver::key(unsigned long keysym, bool with_ctrl) {
-  const auto press = [&](unsigned long which, bool down) {
-    XTestFakeKeyEvent(screen_->connection, XKeysymToKeycode(screen_->connection, which), down ? True : False,
-                      CurrentTime);
-  };
-  const KeyCode code = XKeysymToKeycode(screen_->connection, keysym);
-  const bool shifted = XkbKeycodeToKeysym(screen_->connection, code, 0, 0) != keysym;
-  if (with_ctrl) press(XK_Control_L, true);
-  if (shifted) press(XK_Shift_L, true);
-  press(keysym, true);
+  if (with_ctrl) screen_->key(XK_Control_L, true);
+  screen_->key(keysym, true);
   screen_->flush();
-  if (with_ctrl) picture();  // a shortcut is looked for once a picture
-  press(keysym, false);
-  if (shifted) press(XK_Shift_L, false);
-  if (with_ctrl) press(XK_Control_L, false);
+  picture();  // what a key does beyond its letter is looked for once a picture
+  screen_->key(keysym, false);
+  if (with_ctrl) screen_->key(XK_Control_L, false);
   screen_->flush();
   picture();
 }
 
+std::string Driver::focused() const {
+  const auto focus = places_.find(desktop::the_focus);
+  if (focus == places_.end()) return {};
+  const auto same = [&](const ImVec4& other) {
+    return other.x == focus->second.x && other.y == focus->second.y && other.z == focus->second.z &&
+           other.w == focus->second.w;
+  };
+  for (const auto& [name, place] : places_)
+    if (name != desktop::the_focus && same(place)) return name;
+  return {};
+}
+
+bool Driver::focus_is_seen() const {
+  const auto focus = places_.find(desktop::the_focus);
+  if (focus == places_.end()) return false;
+  const ImVec4 place = focus->second;
+  const Shot now = shot();
+  const auto width = static_cast<int>(place.z - place.x);
+  for (int away = 0; away < 6; ++away) {
+    const int y = static_cast<int>(place.y) - away;
+    int ringed = 0;
+    for (int x = static_cast<int>(place.x); x < static_cast<int>(place.z); ++x)
+      ringed += now.is(x, y, palette(window_->dark()).accent) ? 1 : 0;
+    if (ringed > width * 9 / 10) return true;
+  }
+  return false;
+}
+
+void Driver::walk_to(const std::string& name) {
+  constexpr int most = 150;
+  for (int i = 0; i < most && focused() != name; ++i) {
+    if (!places_.contains(name)) throw std::runtime_error("\"" + name + "\" is not drawn");
+    const ImVec4 to = places_.at(name);
+    const auto focus = places_.find(desktop::the_focus);
+    const ImVec4 at = focus == places_.end() ? ImVec4{} : focus->second;
+    const float middle = (to.y + to.w) / 2;
+    key(middle > at.w ? XK_Down : middle < at.y ? XK_Up : at.x < to.x ? XK_Right : XK_Left);
+    picture();
+  }
+  if (focused() != name) throw lost(name);
+}
+
+void Driver::tab_to(const std::string& name) {
+  constexpr int most = 40;
+  for (int i = 0; i < most && focused() != name; ++i) {
+    key(XK_Tab);
+    picture();
+  }
+  if (focused() != name) throw lost(name);
+}
+
+std::runtime_error Driver::lost(const std::string& name) const {
+  save(std::filesystem::temp_directory_path() / "no-focus.png");
+  return std::runtime_error("the focus does not come to \"" + name + "\" and is at \"" + focused() +
+                            "\": no-focus.png has the window");
+}
+
 void Driver::type(const std::string& text) {
-  for (const char c : text) key(static_cast<unsigned char>(c));  // Latin-1 is its own keysym
+  for (const char c : text) {
+    const auto letter = static_cast<unsigned char>(c);  // Latin-1 is its own keysym
+    const bool shifted = screen_->is_shifted(letter);
+    if (shifted) screen_->key(XK_Shift_L, true);
+    screen_->key(letter, true);
+    screen_->key(letter, false);
+    if (shifted) screen_->key(XK_Shift_L, false);
+    screen_->flush();
+    picture();
+  }
 }
 
 void Driver::put(const std::string& name, const std::string& text) {
@@ -227,36 +263,7 @@ void Driver::put(const std::string& name, const std::string& text) {
   pictures(2);
 }
 
-int Driver::pixels_of(charts::Colour colour) const {
-  XImage* image =
-      XGetImage(screen_->connection, DefaultRootWindow(screen_->connection), 0, 0,
-                static_cast<unsigned>(width_), static_cast<unsigned>(height_), AllPlanes, ZPixmap);
-  if (!image) throw std::runtime_error("the window cannot be read");
-  const unsigned long wanted = (static_cast<unsigned long>(colour.red) << 16) |
-                               (static_cast<unsigned long>(colour.green) << 8) | colour.blue;
-  int found = 0;
-  for (int y = 0; y < height_; ++y)
-    for (int x = 0; x < width_; ++x)
-      if ((XGetPixel(image, x, y) & 0xFFFFFF) == wanted) ++found;
-  XDestroyImage(image);
-  return found;
-}
-
-void Driver::save(const std::filesystem::path& file) const {
-  XImage* image =
-      XGetImage(screen_->connection, DefaultRootWindow(screen_->connection), 0, 0,
-                static_cast<unsigned>(width_), static_cast<unsigned>(height_), AllPlanes, ZPixmap);
-  if (!image) throw std::runtime_error("the window cannot be read");
-  cairo_surface_t* surface = cairo_image_surface_create(CAIRO_FORMAT_RGB24, width_, height_);
-  unsigned char* row = cairo_image_surface_get_data(surface);
-  for (int y = 0; y < height_; ++y, row += cairo_image_surface_get_stride(surface))
-    for (int x = 0; x < width_; ++x)
-      reinterpret_cast<std::uint32_t*>(row)[x] = static_cast<std::uint32_t>(XGetPixel(image, x, y));
-  cairo_surface_mark_dirty(surface);
-  const auto status = cairo_surface_write_to_png(surface, file.c_str());
-  cairo_surface_destroy(surface);
-  XDestroyImage(image);
-  if (status != CAIRO_STATUS_SUCCESS) throw std::runtime_error("cannot write " + file.string());
-}
+Shot Driver::shot() const { return screen_->shot(); }
+void Driver::save(const std::filesystem::path& file) const { shot().save(file); }
 
 }  // namespace desktop_test

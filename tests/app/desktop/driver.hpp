@@ -3,12 +3,14 @@
 
 #include <functional>
 #include <memory>
+#include <stdexcept>
 #include <string>
 #include <vector>
 
 #include "display.hpp"
 #include "model/desk.hpp"
 #include "panels/panels.hpp"
+#include "screen.hpp"
 #include "window/window.hpp"
 
 namespace desktop_test {
@@ -55,11 +57,18 @@ class Driver {
   /// Clicks into a field, whose whole text is then selected, and types.
   void put(const std::string& name, const std::string& text);
   void key(unsigned long keysym, bool with_ctrl = false);
+  /// The thing that has the keyboard's focus and shows it; empty where none does.
+  [[nodiscard]] std::string focused() const;
+  /// Whether a line in the accent's colour runs above what has the focus.
+  [[nodiscard]] bool focus_is_seen() const;
+  /// Leads the focus there with the arrow keys, as somebody does who sees it. Throws where it does not come.
+  void walk_to(const std::string& name);
+  /// Presses Tab until the field has the focus. Throws where it does not come.
+  void tab_to(const std::string& name);
   /// Scrolls until the thing is in sight. Throws where it is not drawn.
   void bring_into_sight(const std::string& name, const std::string& list = {});
 
-  /// Pixels of the window that have exactly this colour.
-  [[nodiscard]] int pixels_of(bathwright::charts::Colour colour) const;
+  [[nodiscard]] Shot shot() const;
   /// The window as a PNG.
   void save(const std::filesystem::path& file) const;
 
@@ -67,11 +76,11 @@ class Driver {
   [[nodiscard]] const bathwright::desktop::DeskView& view() const { return desk_->view(); }
 
  private:
-  struct Screen;
   void press(const std::string& name, double share);
   void move_to(double x, double y);
   void button(unsigned which, bool down);
   void draw(bathwright::desktop::Intents& intents);
+  [[nodiscard]] std::runtime_error lost(const std::string& name) const;
 
   Display display_;
   std::unique_ptr<bathwright::desktop::Desk> desk_;
