@@ -94,7 +94,11 @@ bool Desk::working() const {
 }
 
 HeadUnits Desk::head_units() const {
-  return {settings_.volume, settings_.temperature == "°F" ? "degF" : "degC", units_.concentration()};
+  HeadUnits heads{settings_.volume, settings_.temperature, {}};
+  if (worked_ && worked_->shop)
+    for (const bath::Quantity& quantity : worked_->shop->type().quantities)
+      heads.value[quantity.id] = units_.typed(quantity);
+  return heads;
 }
 
 void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
@@ -143,119 +147,116 @@ void Desk::open_tank(int tank) {
 
 void Desk::handle(const Intent& intent) {
   changed_ = true;
-  std::visit(
-      Overloaded{[&](const GoTo& to) {
-                   view_.page = to.page;
-                   fault_.clear();
-                   said_.clear();
-                   if (to.page == PageName::forecast && !forecasted_) ask_forecast();
-                   if (to.page == PageName::trends) ask_trends();
-                   if (to.page == PageName::bath_types) list_bath_types();
-                 },
-                 [&](const OpenTank& open) {
-                   fault_.clear();
-                   if (open.tank != open_) open_tank(open.tank);
-                 },
-                 [&](const TypeReading& typed) {
-                   if (draft_) draft_->type(typed, now_in_shop(log_.calendar)), draft_changed();
-                 },
-                 [&](const ChooseMethod& chosen) {
-                   if (draft_) draft_->choose(chosen), draft_changed();
-                 },
-                 [&](const UndoTyping&) {
-                   if (draft_) draft_->undo(), draft_changed();
-                 },
-                 [&](const RedoTyping&) {
-                   if (draft_) draft_->redo(), draft_changed();
-                 },
-                 [&](const NewSample&) {
-                   if (draft_) draft_->start_again(blank_), draft_changed();
-                 },
-                 [&](const ChoosePlan& chosen) {
-                   plan_ = chosen.plan;
-                   edited_.clear();
-                   ask();
-                 },
-                 [&](const DragAmount& dragged) { drag(dragged); },
-                 [&](const AddChemical& added) { add_chemical(added.chemical); },
-                 [&](const BackToPlan&) {
-                   edited_.clear();
-                   ask();
-                 },
-                 [&](const LogAnalysis& asked) { log_analysis(asked.names); },
-                 [&](const IssueSlip& asked) { issue_slip(asked.names); },
-                 [&](const StepDone& asked) {
-                   if (log_.slip) log_entry(work::step_done(*log_.slip, asked.step), asked.names);
-                 },
-                 [&](const ApproveSlip& asked) {
-                   if (log_.slip) log_entry(work::approval(*log_.slip), asked.names);
-                 },
-                 [&](const CloseSlip& asked) {
-                   if (log_.slip)
-                     log_entry(work::closing(*log_.slip, asked.cancelled, asked.reason), asked.names);
-                 },
-                 [&](const HandOver& asked) { hand_over(asked.names); },
-                 [&](const SetShifts& asked) { set_shifts(asked); },
-                 [&](const AdmitPerson& asked) { admit(asked); },
-                 [&](const ChoosePolicy& chosen) {
-                   policy_ = chosen.policy;
-                   levers_.reset();
-                   ask_forecast();
-                 },
-                 [&](const MoveLever& lever) {
-                   if (!forecasted_) return;
-                   Levers levers = levers_.value_or(forecasted_->levers);
-                   if (lever.lever == 0) levers.bleed_L_per_day = std::max(0.0, lever.value);
-                   if (lever.lever == 1) levers.drag_out = std::max(0.0, lever.value);
-                   if (lever.lever == 2) levers.load = std::max(0.0, lever.value);
-                   if (lever.lever == 3) levers.horizon_days = std::max(1, static_cast<int>(lever.value));
-                   levers_ = levers;
-                   ask_forecast();
-                 },
-                 [&](const StopSampling&) { forecast_job_.stop(); },
-                 [&](const FilterLog& filter) {
-                   filter_ = filter.text;
-                   ask_log();
-                 },
-                 [&](const ShowEntry& entry) {
-                   shown_entry_ = entry.seq;
-                   ask_log();
-                 },
-                 [&](const AskSource& asked) {
-                   std::vector<std::string> names;
-                   view_.source.species = asked.species;
-                   view_.source.text =
-                       work::sources_sheet(asked.species, work::constants_about(asked.species, names));
-                 },
-                 [&](const SaveCharts& asked) { save(asked); },
-                 [&](const SetPaper& asked) {
-                   settings_.letter = asked.letter;
-                   settings_changed();
-                 },
-                 [&](const OpenFolder& asked) { open_shop(asked.folder, true); },
-                 [&](const OpenDemonstration&) {
-                   if (const auto folder = work::demonstration_shop())
-                     open_shop(*folder, true);
-                   else
-                     fault_ = text(folder.problems());
-                 },
-                 [&](const SetLook& look) {
-                   settings_.scale = look.scale;
-                   settings_.dark = look.dark;
-                   settings_changed();
-                 },
-                 [&](const SetUnits& chosen) {
-                   const auto at = [](const std::vector<std::string>& all, int i) {
-                     return all[static_cast<std::size_t>(std::clamp(i, 0, static_cast<int>(all.size()) - 1))];
-                   };
-                   settings_.concentration = at(Units::concentrations(), chosen.concentration);
-                   settings_.volume = at(Units::volumes(), chosen.volume);
-                   settings_.temperature = at(Units::temperatures(), chosen.temperature);
-                   units_ = Units(settings_);
-                   settings_changed();
-                   ask();
-                 }},
-      intent);
+  std::visit(Overloaded{[&](const GoTo& to) {
+                          view_.page = to.page;
+                          fault_.clear();
+                          said_.clear();
+                          if (to.page == PageName::forecast && !forecasted_) ask_forecast();
+                          if (to.page == PageName::trends) ask_trends();
+                          if (to.page == PageName::bath_types) list_bath_types();
+                        },
+                        [&](const OpenTank& open) {
+                          fault_.clear();
+                          if (open.tank != open_) open_tank(open.tank);
+                        },
+                        [&](const TypeReading& typed) {
+                          if (draft_) draft_->type(typed, now_in_shop(log_.calendar)), draft_changed();
+                        },
+                        [&](const ChooseMethod& chosen) {
+                          if (draft_) draft_->choose(chosen), draft_changed();
+                        },
+                        [&](const UndoTyping&) {
+                          if (draft_) draft_->undo(), draft_changed();
+                        },
+                        [&](const RedoTyping&) {
+                          if (draft_) draft_->redo(), draft_changed();
+                        },
+                        [&](const NewSample&) {
+                          if (draft_) draft_->start_again(blank_), draft_changed();
+                        },
+                        [&](const ChoosePlan& chosen) {
+                          plan_ = chosen.plan;
+                          edited_.clear();
+                          ask();
+                        },
+                        [&](const DragAmount& dragged) { drag(dragged); },
+                        [&](const AddChemical& added) { add_chemical(added.chemical); },
+                        [&](const BackToPlan&) {
+                          edited_.clear();
+                          ask();
+                        },
+                        [&](const LogAnalysis& asked) { log_analysis(asked.names); },
+                        [&](const IssueSlip& asked) { issue_slip(asked.names); },
+                        [&](const StepDone& asked) {
+                          if (log_.slip) log_entry(work::step_done(*log_.slip, asked.step), asked.names);
+                        },
+                        [&](const ApproveSlip& asked) {
+                          if (log_.slip) log_entry(work::approval(*log_.slip), asked.names);
+                        },
+                        [&](const CloseSlip& asked) {
+                          if (log_.slip)
+                            log_entry(work::closing(*log_.slip, asked.cancelled, asked.reason), asked.names);
+                        },
+                        [&](const HandOver& asked) { hand_over(asked.names); },
+                        [&](const SetShifts& asked) { set_shifts(asked); },
+                        [&](const AdmitPerson& asked) { admit(asked); },
+                        [&](const ChoosePolicy& chosen) {
+                          policy_ = chosen.policy;
+                          levers_.reset();
+                          ask_forecast();
+                        },
+                        [&](const MoveLever& lever) {
+                          if (!forecasted_) return;
+                          Levers levers = levers_.value_or(forecasted_->levers);
+                          if (lever.lever == 0) levers.bleed_L_per_day = std::max(0.0, lever.value);
+                          if (lever.lever == 1) levers.drag_out = std::max(0.0, lever.value);
+                          if (lever.lever == 2) levers.load = std::max(0.0, lever.value);
+                          if (lever.lever == 3)
+                            levers.horizon_days = std::max(1, static_cast<int>(lever.value));
+                          levers_ = levers;
+                          ask_forecast();
+                        },
+                        [&](const StopSampling&) { forecast_job_.stop(); },
+                        [&](const FilterLog& filter) {
+                          filter_ = filter.text;
+                          ask_log();
+                        },
+                        [&](const ShowEntry& entry) {
+                          shown_entry_ = entry.seq;
+                          ask_log();
+                        },
+                        [&](const AskSource& asked) {
+                          std::vector<std::string> names;
+                          view_.source.species = asked.species;
+                          view_.source.text =
+                              work::sources_sheet(asked.species, work::constants_about(asked.species, names));
+                        },
+                        [&](const SaveCharts& asked) { save(asked); },
+                        [&](const SetPaper& asked) {
+                          settings_.letter = asked.letter;
+                          settings_changed();
+                        },
+                        [&](const OpenFolder& asked) { open_shop(asked.folder, true); },
+                        [&](const OpenDemonstration&) {
+                          if (const auto folder = work::demonstration_shop())
+                            open_shop(*folder, true);
+                          else
+                            fault_ = text(folder.problems());
+                        },
+                        [&](const SetLook& look) {
+                          settings_.scale = look.scale;
+                          settings_.dark = look.dark;
+                          settings_changed();
+                        },
+                        [&](const SetUnit& set) {
+                          if (draft_) draft_->write_out(head_units());
+                          const UnitChoice& choice = unit_choices().at(static_cast<std::size_t>(set.which));
+                          settings_.*choice.kept = choice.all.at(static_cast<std::size_t>(set.chosen));
+                          units_ = Units(settings_);
+                          settings_changed();
+                          ask();
+                        }},
+             intent);
 }
 
 void Desk::settings_changed() {
@@ -263,7 +264,8 @@ void Desk::settings_changed() {
 }
 
 void Desk::draft_changed() {
-  if (const Outcome kept = keep_draft(draft_file(), draft_->now()); !kept) fault_ = text(kept.problems());
+  if (const Outcome kept = keep_draft(draft_file(), with_units(draft_->now(), head_units())); !kept)
+    fault_ = text(kept.problems());
   edited_.clear();
   plan_ = 0;
   ask();
@@ -284,7 +286,8 @@ void Desk::drag(const DragAmount& drag) {
   auto& [id, kg] = edited_[static_cast<std::size_t>(drag.addition)];
   const matter::StockChemical* stock = stock_of(*tank(), id);
   if (!stock) return;
-  kg = stock->liquid ? drag.amount * stock->kg_per_L : drag.amount;
+  const double amount = drag.amount / units_.amount_unit(stock->liquid ? "L" : "kg").per_one;
+  kg = stock->liquid ? amount * stock->kg_per_L : amount;
   ask();
 }
 
@@ -328,7 +331,7 @@ void Desk::ask_forecast() {
 }
 
 void Desk::ask_trends() {
-  view_.trends = {"reading the log ...", {}, {}};
+  trended_.reset();
   if (const bath::Tank* open = tank()) trends_job_.ask({session_, *open});
 }
 
@@ -519,7 +522,7 @@ bool Desk::update() {
   }
   if (auto answer = trends_job_.take()) {
     changed_ = true;
-    if (tank() && answer->tank == tank()->name) view_.trends = std::move(answer->view);
+    if (tank() && answer->tank == tank()->name) trended_ = std::move(answer);
   }
   if (auto came = signing_.take()) {
     changed_ = true;
@@ -543,17 +546,10 @@ bool Desk::update() {
 void Desk::show() {
   view_.first_start = open_ < 0;
   view_.fault = fault_;
-  view_.settings = {settings_.shop.string(),
-                    session_.log_file,
-                    Units::concentrations(),
-                    Units::volumes(),
-                    Units::temperatures(),
-                    index_of(Units::concentrations(), settings_.concentration),
-                    index_of(Units::volumes(), settings_.volume),
-                    index_of(Units::temperatures(), settings_.temperature),
-                    settings_.scale,
-                    settings_.dark,
-                    settings_.letter};
+  view_.settings = {settings_.shop.string(), session_.log_file, {},
+                    settings_.scale,         settings_.dark,    settings_.letter};
+  for (const UnitChoice& choice : unit_choices())
+    view_.settings.units.push_back({choice.what, choice.all, index_of(choice.all, settings_.*choice.kept)});
   if (open_ < 0) return;
   view_.status.doing = signing_.busy()           ? "signing ..."
                        : forecast_job_.working() ? "forecasting ..."
@@ -573,14 +569,14 @@ void Desk::show() {
   view_.readings.can_undo = draft_ && draft_->can_undo();
   view_.readings.can_redo = draft_ && draft_->can_redo();
   view_.readings.working = tank_job_.working();
-  view_.readings.units = {settings_.volume, settings_.temperature, units_.concentration()};
+  view_.readings.units = {settings_.volume, settings_.temperature};
   if (!draft_ && worked)
     for (const Problem& problem : worked->problems) view_.readings.faults.push_back(problem.text());
   view_.state = worked ? state_view(*worked, shown_plan(*worked, plan_), units_) : StateView{};
   view_.additions = worked ? additions_view(*worked, plan_, edited_, units_) : AdditionsView{};
   view_.additions.working = tank_job_.working();
   view_.chemistry = worked ? chemistry_view(*worked, units_) : ChemistryView{};
-  view_.slip = slip_view(log_.slip, log_.calendar);
+  view_.slip = slip_view(log_.slip, log_.calendar, units_);
   view_.sign = {work::signer(session_),
                 session_.log_file,
                 fault_,
@@ -604,6 +600,9 @@ void Desk::show() {
   view_.hand_over = {log_.hand_over_text, log_.calendar.has_value()};
   const double progress = forecast_job_.working() ? forecast_work_.progress() : 0;
   view_.forecast = forecasted_ ? forecast_view(*forecasted_, units_) : ForecastView{};
+  const bath::BathType* type = worked && worked->shop ? &worked->shop->type() : nullptr;
+  view_.trends =
+      trended_ ? trends_view(*trended_, type, units_) : TrendsView{"reading the log ...", {}, {}, {}};
   if (policies_.empty())
     view_.forecast.empty =
         "No policy of this tank is in the folder policies: copy one from the demonstration shop and "

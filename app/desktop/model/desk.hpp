@@ -81,6 +81,7 @@ class Desk {
   int policy_ = 0;
   std::optional<Levers> levers_;
   std::optional<Forecasted> forecasted_;
+  std::optional<TrendsAnswer> trended_;
   DeskView view_;
   bool changed_ = true;
   Signing signing_;

@@ -35,6 +35,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
     shop_ = std::make_shared<const work::Shop>(*std::move(shop));
     shop_file_ = question.tank_file;
   }
+  told.shop = shop_;
   const work::Shop& shop = *shop_;
   const auto start = work::starting_state(question.session, shop, question.readings_file.string());
   if (!start) return fail(start.problems());

@@ -114,14 +114,14 @@ struct SetLook {
   float scale;
   bool dark;
 };
-struct SetUnits {
-  int concentration, volume, temperature;  ///< in the order of the settings page
+struct SetUnit {
+  int which, chosen;  ///< in the order of the settings page
 };
 
 using Intent = std::variant<GoTo, OpenTank, TypeReading, ChooseMethod, UndoTyping, RedoTyping, NewSample,
                             ChoosePlan, DragAmount, AddChemical, BackToPlan, LogAnalysis, IssueSlip, StepDone,
                             ApproveSlip, CloseSlip, HandOver, SetShifts, AdmitPerson, ChoosePolicy, MoveLever,
                             StopSampling, FilterLog, ShowEntry, AskSource, SaveCharts, SetPaper, OpenFolder,
-                            OpenDemonstration, SetLook, SetUnits>;
+                            OpenDemonstration, SetLook, SetUnit>;
 
 }  // namespace bathwright::desktop

@@ -45,6 +45,7 @@ void draw_trends(const TrendsView& view, const std::string& tank, PanelState& st
   }
   for (const std::string& finding : view.findings)
     standing(look, static_cast<int>(charts::State::act), finding);
+  for (const std::string& note : view.notes) quiet(look, note);
   ImGui::SetNextItemWidth(look.px(230));
   ImGui::InputTextWithHint("##file", "trends.pdf, .svg or .png", &state.file);
   ImGui::SameLine();
@@ -157,12 +158,16 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   ImGui::SameLine();
   if (button(look, "Open the demonstration shop")) out.emplace_back(OpenDemonstration{});
   heading(look, "Units that are shown");
-  SetUnits chosen{settings.concentration, settings.volume, settings.temperature};
-  bool changed = choose("concentrations", settings.concentrations, chosen.concentration, look);
-  changed = choose("volumes", settings.volumes, chosen.volume, look) || changed;
-  changed = choose("temperatures", settings.temperatures, chosen.temperature, look) || changed;
-  if (changed) out.emplace_back(chosen);
-  quiet(look, "Any unit may be typed. A bare number has the unit its field is headed with.");
+  for (std::size_t i = 0; i < settings.units.size(); ++i) {
+    if (i % 2 == 1) ImGui::SameLine(look.px(320));
+    const SettingsView::Choice& unit = settings.units[i];
+    SetUnit chosen{static_cast<int>(i), unit.chosen};
+    if (choose(unit.what.c_str(), unit.all, chosen.chosen, look)) out.emplace_back(chosen);
+  }
+  quiet(
+      look,
+      "Any unit may be typed. A bare number has the unit its field is headed with. What cannot be told in the "
+      "chosen unit is shown in g/L; printed sheets and the log have g/L, kg and L.");
   heading(look, "Look");
   for (const auto& [words, scale] :
        {std::pair{"100 %", 1.0F}, {"125 %", 1.25F}, {"150 %", 1.5F}, {"200 %", 2.0F}}) {

@@ -32,13 +32,14 @@ struct ReadingRow {
   int method = 0;
   std::string sample, titrant, burette, value;  ///< as typed; `value` of a concentration
   bool is_value = false;
-  std::string result;  ///< "70.7 ± 0.46 g/L"; empty until it can be worked out
-  std::string fault;   ///< what is wrong with this row and how to mend it
+  std::string value_unit;  ///< of a bare `value`
+  std::string result;      ///< "70.7 ± 0.46 g/L"; empty until it can be worked out
+  std::string fault;       ///< what is wrong with this row and how to mend it
 };
 
 /// What a bare number means, for the heads of the fields.
 struct HeadWords {
-  std::string volume, temperature, value;
+  std::string volume, temperature;
 };
 
 struct ReadingsView {
@@ -183,7 +184,7 @@ struct ForecastView {
 struct TrendsView {
   std::string empty;
   std::vector<charts::Chart> charts;
-  std::vector<std::string> findings;
+  std::vector<std::string> findings, notes;
 };
 
 struct BathTypeRow {
@@ -197,8 +198,12 @@ struct PersonRow {
 
 struct SettingsView {
   std::string folder, log;
-  std::vector<std::string> concentrations, volumes, temperatures;
-  int concentration = 0, volume = 0, temperature = 0;
+  struct Choice {
+    std::string what;
+    std::vector<std::string> all;
+    int chosen = 0;
+  };
+  std::vector<Choice> units;
   float scale = 1;
   bool dark = false, letter = false;
 };

@@ -71,7 +71,7 @@ DeskView a_view() {
   view.line.selected = 3;
   view.tank_title = "N-3 nickel";
   view.readings.rows = {
-      {"Ni²⁺", {"edta nickel", "a concentration"}, 0, "2 mL", "0.1 mol/L", "", "", false, "", ""}};
+      {"Ni²⁺", {"edta nickel", "a concentration"}, 0, "2 mL", "0.1 mol/L", "", "", false, "", "", ""}};
   view.state.rows = {{"nickel",
                       "g/L",
                       {60, 75, 90, 70, 75, 1},
@@ -111,9 +111,7 @@ TEST_CASE("every page is drawn, empty and full, at every scale", "[unit][desktop
     for (const PageName page : every_page) {
       DeskView empty, full = a_view();
       empty.page = full.page = page;
-      empty.settings.concentrations = full.settings.concentrations = {"g/L"};
-      empty.settings.volumes = full.settings.volumes = {"L"};
-      empty.settings.temperatures = full.settings.temperatures = {"°C"};
+      empty.settings.units = full.settings.units = {{"concentrations", {"g/L"}, 0}, {"volumes", {"L"}, 0}};
       for (int i = 0; i < 3; ++i) {
         CHECK(unseen.picture(empty).empty());
         CHECK(unseen.picture(full).empty());
