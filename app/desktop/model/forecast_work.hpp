@@ -41,6 +41,7 @@ struct Forecasted {
   std::string currency, from;
   std::vector<std::string> notes;
   bool sampled = false;
+  std::optional<sheets::Page> sheet;  ///< to print, once all but the samples is worked out
 };
 
 class ForecastWork {

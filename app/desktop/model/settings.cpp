@@ -23,6 +23,7 @@ Settings kept_settings(const std::filesystem::path& file) {
   settings.concentration = text("concentration", settings.concentration);
   settings.volume = text("volume", settings.volume);
   settings.temperature = text("temperature", settings.temperature);
+  settings.print_command = text("print_command", settings.print_command);
   settings.mass = text("mass", settings.mass);
   settings.liquid = text("liquid", settings.liquid);
   settings.density = text("density", settings.density);
@@ -39,6 +40,7 @@ Outcome keep(const std::filesystem::path& file, const Settings& settings) {
                      {"scale", settings.scale},
                      {"dark", settings.dark},
                      {"letter", settings.letter},
+                     {"print_command", settings.print_command},
                      {"concentration", settings.concentration},
                      {"volume", settings.volume},
                      {"temperature", settings.temperature},

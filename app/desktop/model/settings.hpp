@@ -11,6 +11,7 @@ struct Settings {
   std::filesystem::path shop;  ///< empty: the first start
   float scale = 0;             ///< of letters and spaces, 1 to 2; 0: as the display asks
   bool dark = false;
+  std::string print_command = "lp";
   bool letter = false;  ///< slips and hand-overs are printed on Letter, else on A4
   std::string concentration = "g/L", volume = "L", temperature = "°C";  ///< the choices of units.hpp
   std::string mass = "kg", liquid = "L", density = "kg/L";

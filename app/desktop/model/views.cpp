@@ -581,7 +581,8 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
                   {"metal lost a day", units.mass(told.summary.metal_lost_kg, 3)}};
   double most_bleed = 0;
   for (const auto& bleed : told.bleeds) {
-    view.figures.emplace_back("bleed that holds " + bleed.limit,
+    if (!bleed.litres_per_day) continue;
+    view.figures.emplace_back("bleed that holds " + told.shop->type().quantity(bleed.quantity)->label,
                               units.volume(*bleed.litres_per_day) + " more a day");
     most_bleed = std::max(most_bleed, levers.bleed_L_per_day + *bleed.litres_per_day);
   }
@@ -589,6 +590,7 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   view.levers[0].high = std::max({usual_bleed, 2 * levers.bleed_L_per_day, 1.5 * most_bleed});
   view.charts = told.page.charts;
   for (charts::Chart& chart : view.charts) convert(chart, &told.shop->type(), units);
+  view.may_print = told.sheet.has_value();
   view.notes = told.notes;
   if (units.only_for_now()) view.notes.insert(view.notes.begin(), needs_density);
   return view;

@@ -9,6 +9,7 @@
 #include "display.hpp"
 #include "model/desk.hpp"
 #include "panels/panels.hpp"
+#include "window/textures.hpp"
 #include "window/window.hpp"
 
 namespace desktop_test {
@@ -76,6 +77,7 @@ class Driver {
   Display display_;
   std::unique_ptr<bathwright::desktop::Desk> desk_;
   std::unique_ptr<bathwright::desktop::Window> window_;
+  std::unique_ptr<bathwright::desktop::Textures> textures_;
   std::unique_ptr<Screen> screen_;
   bathwright::desktop::PanelState state_;
   bathwright::desktop::Places places_;
