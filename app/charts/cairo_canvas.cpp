@@ -13,8 +13,12 @@ void trace(cairo_t* drawing, std::span<const Point> points) {
 
 }  // namespace
 
-CairoCanvas::CairoCanvas(cairo_surface_t* surface, double scale) : drawing_(cairo_create(surface)) {
+CairoCanvas::CairoCanvas(cairo_surface_t* surface, double scale) : CairoCanvas(cairo_create(surface)) {
+  cairo_destroy(drawing_.get());  // the reference of cairo_create: ours is held
   cairo_scale(drawing_.get(), scale, scale);
+}
+
+CairoCanvas::CairoCanvas(cairo_t* drawing) : drawing_(cairo_reference(drawing)) {
   cairo_set_line_join(drawing_.get(), CAIRO_LINE_JOIN_ROUND);
   layout_.reset(pango_cairo_create_layout(drawing_.get()));
 }

@@ -14,6 +14,8 @@ class CairoCanvas final : public Canvas {
  public:
   /// The surface outlives the canvas; `scale` pixels or points of it are one of ours.
   CairoCanvas(cairo_surface_t* surface, double scale);
+  /// Goes on where another draws: with its place and size.
+  explicit CairoCanvas(cairo_t* drawing);
 
   void polyline(std::span<const Point> points, const Pen& pen) override;
   void fill(const Box& box, Colour colour) override;

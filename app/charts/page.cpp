@@ -12,6 +12,7 @@ std::size_t rows_of(const Page& page) {
   return std::max<std::size_t>(1, (page.charts.size() + columns_of(page) - 1) / columns_of(page));
 }
 double head_room(const Page& page) {
+  if (page.title.empty() && page.words.empty()) return 0;  // stands in another document
   return margin + title_size + 8 + word_line * static_cast<double>(page.words.size()) + gap / 2;
 }
 

@@ -32,6 +32,11 @@ cairo_status_t write_svg(const std::string& file, const Page& page) {
   return finish(surface);
 }
 
+cairo_status_t append(void* bytes, const unsigned char* data, unsigned int length) {
+  static_cast<std::string*>(bytes)->append(reinterpret_cast<const char*>(data), length);
+  return CAIRO_STATUS_SUCCESS;
+}
+
 cairo_status_t write_png(const std::string& file, const Page& page) {
   constexpr double scale = 2;
   const double height = usual_height(page, width);
@@ -63,6 +68,18 @@ cairo_status_t write_pdf(const std::string& file, const Page& page) {
 }
 
 }  // namespace
+
+std::string svg_of(const Page& page) {
+  const double height = usual_height(page, width);
+  std::string bytes;
+  {
+    const Surface surface(cairo_svg_surface_create_for_stream(append, &bytes, width, height));
+    CairoCanvas canvas(surface.get(), 1);
+    draw(page, canvas, width, height);
+    finish(surface);
+  }
+  return bytes.substr(std::min(bytes.find("<svg"), bytes.size()));  // without the head of a file
+}
 
 Outcome write_page(const std::filesystem::path& file, const Page& page) {
   std::string ending = file.extension().string();

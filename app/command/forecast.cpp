@@ -14,7 +14,8 @@
 #include <thread>
 #include <utility>
 
-#include "context.hpp"
+#include "printed.hpp"
+#include "work/bleeds_to_hold.hpp"
 #include "work/tank_state.hpp"
 
 namespace bathwright::command {
@@ -30,6 +31,7 @@ struct Options {
   std::vector<std::string> against;
   int samples = 200;
   std::uint64_t seed = 1;
+  PrintedFiles printed;
 };
 
 Json by_quantity(const std::vector<double>& values, const bath::BathType& type) {
@@ -211,34 +213,6 @@ Outcome write_csv(const std::string& path, const sheets::ForecastPage& page) {
   return Problem{Fault::io, path, "could not be written", "", "Check the folder and its rights."};
 }
 
-/// The bleed that holds each level that rises to its limit and that nobody puts back, and the work that the
-/// policy's own bleed can carry. What cannot be found says why.
-std::vector<sheets::BleedToHold> bleeds(const Forecast& forecast, const bath::TankState& start,
-                                        const std::vector<forecast::LimitMet>& limits) {
-  std::vector<sheets::BleedToHold> all;
-  for (const auto& limit : limits) {
-    if (limit.quantity.empty() || !limit.from_below || limit.share == 0 ||
-        limit.cause != forecast::Cause::by_product)
-      continue;
-    const auto bleed = forecast.bleed_to_hold(start, limit.quantity, limit.g_per_L);
-    if (bleed && !*bleed) continue;
-    sheets::BleedToHold held;
-    held.limit = forecast.chemistry().type().quantity(limit.quantity)->label + " at " +
-                 units::significant(limit.g_per_L) + " g/L";
-    if (bleed)
-      held.litres_per_day = *bleed;
-    else
-      held.why_no_bleed = text(bleed.problems());
-    const auto load = forecast.largest_load(start, limit.quantity, limit.g_per_L);
-    if (load)
-      held.load = *load;
-    else
-      held.why_no_load = text(load.problems());
-    all.push_back(std::move(held));
-  }
-  return all;
-}
-
 /// Samples with progress on a terminal; Ctrl-C stops them.
 Result<forecast::Bands> sampled(const Context& context, const Options& options, const Forecast& forecast,
                                 const bath::TankState& start) {
@@ -316,7 +290,7 @@ int run(const Context& context, const Options& options) {
                             start->read.from,
                             {},
                             {}};
-  page.bleeds = bleeds(*forecast, start->state, page.limits);
+  page.bleeds = bleeds_to_hold(*forecast, start->state, page.limits);
   if (options.samples > 0) {
     if (auto moved = forecast->sensitivity(start->state)) page.sensitivity = *std::move(moved);
   }
@@ -333,6 +307,8 @@ int run(const Context& context, const Options& options) {
   if (!options.chart.empty())
     if (const Outcome written = charts::write_page(options.chart, sheets::forecast_charts(page)); !written)
       return fail(context, written.problems());
+  if (const Outcome written = write_printed(options.printed, sheets::forecast_page(page)); !written)
+    return fail(context, written.problems());
   if (context.json)
     print(json_of(page));
   else
@@ -360,6 +336,7 @@ void add_forecast(CLI::App& program, Context& context, Action& action) {
       ->check(CLI::ExistingFile);
   verb->add_option("--csv", options->csv, "also write one row a day to this file");
   verb->add_option("--chart", options->chart, "also draw it: FILE.svg, FILE.png or FILE.pdf");
+  add_printed_files(*verb, options->printed);
   verb->footer(
       "Example: bathwright forecast baths/al-1.toml baths/policies/al-1.toml\n"
       "         bathwright forecast baths/e-02.toml baths/policies/e-02.toml --against "

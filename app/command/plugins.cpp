@@ -3,7 +3,6 @@
 #include <unistd.h>
 #include <CLI/CLI.hpp>
 
-#include <bathwright/plugin_host/allow_list.hpp>
 #include <bathwright/sheets/cautions.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
@@ -12,6 +11,7 @@
 
 #include "context.hpp"
 #include "plugins_check.hpp"
+#include "work/allowed_plugins.hpp"
 #include "work/shop.hpp"
 
 namespace bathwright::command {
@@ -84,20 +84,15 @@ bool says_yes() {
 }
 
 int allow(const Context& context, const std::string& name, bool yes) {
-  const plugin_host::Places places = plugin_places(context);
   const std::filesystem::path file = std::filesystem::absolute(name);
-  const auto examined = plugin_host::examine(file, places);
+  const auto examined = examine_plugin(context, file);
   if (!examined) return fail(context, examined.problems());
   if (!context.json) print(page_of(file, *examined));
   if (Problems problems = examined->report.problems(); !problems.empty()) return fail(context, problems);
   if (!examined->built_in) {
     if (!context.json) {
       sheets::Lines lines;
-      sheets::say(
-          lines,
-          "A bath type is a program. Allowed, it runs whenever you start Bathwright, with your own rights: it "
-          "can read and write what you can. Its hash shows that it is the same file tomorrow, not that it is "
-          "good. Allow it only if you would let its author work on your computer.");
+      sheets::say(lines, what_allowing_means);
       print(lines);
     }
     if (!yes && (context.json || ::isatty(STDIN_FILENO) == 0))
@@ -105,15 +100,9 @@ int allow(const Context& context, const std::string& name, bool yes) {
                   {{Fault::refused, file.string(), "nobody is here to say yes", "a terminal, or --yes", ""}});
     if (!yes && !says_yes())
       return fail(context, {{Fault::refused, file.string(), "is not allowed", "", ""}});
-    const auto list_file = plugin_host::allow_list_file(places.data);
-    auto list = plugin_host::AllowList::read(list_file);
-    if (!list) return fail(context, list.problems());
-    plugin_host::AllowList longer = *std::move(list);
-    const auto& type = examined->report.types.front();
-    longer.add({examined->sha256, file.string(), type.id, type.author, type.licence});
-    if (Outcome written = longer.write(list_file); !written) return fail(context, written.problems());
   }
-  plugin_host::release_from_quarantine(examined->sha256, places);
+  if (Outcome allowed = allow_plugin(context, file, *examined); !allowed)
+    return fail(context, allowed.problems());
   if (context.json) {
     Json doc = document({});
     doc["allowed"] = {
@@ -126,30 +115,16 @@ int allow(const Context& context, const std::string& name, bool yes) {
 }
 
 int forget(const Context& context, const std::string& which) {
-  const plugin_host::Places places = plugin_places(context);
-  const auto list_file = plugin_host::allow_list_file(places.data);
-  const auto list = plugin_host::AllowList::read(list_file);
-  if (!list) return fail(context, list.problems());
-  plugin_host::AllowList shorter = *list;
-  const std::string path = std::filesystem::absolute(which).string();
-  Json forgotten = Json::array();
-  for (const plugin_host::Allowed& allowed : list->all()) {
-    if (allowed.sha256 != which && allowed.id != which && allowed.file != path) continue;
-    shorter.remove(allowed.sha256);
-    forgotten.push_back({{"id", allowed.id}, {"file", allowed.file}, {"sha256", allowed.sha256}});
-  }
-  if (forgotten.empty())
-    return fail(context, {{Fault::bad_input, which, "is no plugin you allowed",
-                           "the file, id or SHA-256 of one", list_file.string() + " lists them."}});
-  if (Outcome written = shorter.write(list_file); !written) return fail(context, written.problems());
+  const auto forgotten = forget_plugin(context, which);
+  if (!forgotten) return fail(context, forgotten.problems());
   if (context.json) {
     Json doc = document({});
-    doc["forgotten"] = forgotten;
+    doc["forgotten"] = Json::array();
+    for (const auto& one : *forgotten)
+      doc["forgotten"].push_back({{"id", one.id}, {"file", one.file}, {"sha256", one.sha256}});
     print(doc);
   } else {
-    for (const Json& one : forgotten)
-      print(sheets::Lines{"No longer allowed: " + one["id"].get<std::string>() + ", " +
-                          one["file"].get<std::string>()});
+    for (const auto& one : *forgotten) print(sheets::Lines{"No longer allowed: " + one.id + ", " + one.file});
   }
   return Exit::all_well;
 }

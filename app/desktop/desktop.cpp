@@ -2,6 +2,7 @@
 
 #include "model/desk.hpp"
 #include "panels/panels.hpp"
+#include "window/textures.hpp"
 #include "window/window.hpp"
 
 namespace bathwright::desktop {
@@ -13,11 +14,14 @@ Outcome run(const work::Session& session, const std::filesystem::path& shop) {
   Window window = *std::move(opened);
   desk.drawn_by(window.drawn_by());
   PanelState state;
+  Textures textures;
   Intents intents;
   window.run([&] {
     desk.update();
     intents.clear();
-    draw_desk(desk.view(), state, {window.fonts(), palette(window.dark()), window.scale()}, intents);
+    textures.forget_unused();
+    draw_desk(desk.view(), state,
+              {window.fonts(), palette(window.dark()), window.scale(), nullptr, &textures}, intents);
     for (const Intent& intent : intents) {
       desk.handle(intent);
       if (const auto* look = std::get_if<SetLook>(&intent)) window.set_look(look->scale, look->dark);

@@ -19,7 +19,7 @@ Section cautions(const std::vector<std::string>& all) {
   Section section{"Cautions", {}};
   for (const std::string& caution : all)
     if (const auto text = without_deferral(caution); !text.empty())
-      section.blocks.push_back(Paragraph{std::string(text)});
+      section.blocks.emplace_back(Paragraph{std::string(text)});
   return section;
 }
 

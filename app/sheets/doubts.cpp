@@ -52,9 +52,9 @@ Section doubts(const std::vector<std::string>& all) {
   }
   Section section{"What is doubtful", {}};
   for (const auto& [reason, what] : reasons)
-    section.blocks.push_back(Paragraph{what.empty() ? reason : what + ": " + reason});
+    section.blocks.emplace_back(Paragraph{what.empty() ? reason : what + ": " + reason});
   if (!reasons.empty())
-    section.blocks.push_back(Paragraph{"In full, with sources: --json, and bathwright sources ION."});
+    section.blocks.emplace_back(Paragraph{"In full, with sources: --json, and bathwright sources ION."});
   return section;
 }
 

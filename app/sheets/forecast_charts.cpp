@@ -125,6 +125,7 @@ class Pages {
       const bath::Quantity& quantity = type_.quantities[q];
       const auto level = [q](const Day& day) { return day.quantity_g_per_L[q]; };
       Chart chart = framed(quantity.label + " " + pretty(quantity.id), "g/L");
+      chart.level_of = quantity.id;
       double soonest = HUGE_VAL;
       for (const LimitMet& limit : page_.limits) {
         if (limit.quantity != quantity.id) continue;

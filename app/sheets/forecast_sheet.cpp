@@ -3,6 +3,7 @@
 #include <algorithm>
 #include <array>
 #include <bathwright/sheets/cautions.hpp>
+#include <bathwright/sheets/forecast_charts.hpp>
 #include <bathwright/sheets/forecast_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
@@ -64,7 +65,7 @@ std::vector<std::size_t> shown_quantities(const forecast::Run& run, const bath::
   return shown;
 }
 
-Lines levels_by_day(const ForecastPage& page) {
+Section levels_by_day(const ForecastPage& page) {
   const bath::BathType& type = page.forecast.chemistry().type();
   const auto quantities = shown_quantities(page.run, type);
   std::vector<Column> columns = {{"day", Align::number}};
@@ -84,10 +85,14 @@ Lines levels_by_day(const ForecastPage& page) {
     row.emplace_back();
     table.add(row);
   }
-  return table.lines();
+  Section section{"Levels by day, g/L", {}};
+  section.blocks.emplace_back(std::move(table));
+  if (!page.steady_state)
+    section.blocks.emplace_back(Paragraph{"It does not settle: " + page.why_unsettled + "."});
+  return section;
 }
 
-Lines limits_table(const ForecastPage& page) {
+void add_limits(Section& section, const ForecastPage& page) {
   const bool sampled = page.bands != nullptr;
   const bool dated = page.forecast.policy().calendar.starts.has_value();
   std::vector<Column> columns = {{"limit"}, {"day", Align::number}};
@@ -106,8 +111,11 @@ Lines limits_table(const ForecastPage& page) {
     row.emplace_back(forecast::name(limit.cause));
     table.add(row);
   }
-  return table.empty() ? Lines{"  None within " + std::to_string(page.run.days.back().day) + " days."}
-                       : table.lines();
+  if (table.empty())
+    section.blocks.emplace_back(
+        Paragraph{"None within " + std::to_string(page.run.days.back().day) + " days."});
+  else
+    section.blocks.emplace_back(std::move(table));
 }
 
 /// What brings and takes the quantity of a limit, the largest first: "deposition 6.6, drag-out -0.04 kg".
@@ -126,9 +134,20 @@ std::string turnover_of(const ForecastPage& page, const std::string& quantity) {
   return text;
 }
 
-void say_what_holds(Lines& lines, const ForecastPage& page) {
+Section limits_met(const ForecastPage& page) {
+  Section section{"Limits met", {}};
+  add_limits(section, page);
+  const auto say = [&](std::string text) { section.blocks.emplace_back(Paragraph{std::move(text)}); };
+  std::vector<std::string> told;
+  for (const auto& limit : page.limits) {
+    if (limit.quantity.empty() || !limit.day || std::ranges::count(told, limit.quantity) > 0) continue;
+    told.push_back(limit.quantity);
+    say(page.forecast.chemistry().type().quantity(limit.quantity)->label +
+        ", g a day: " + turnover_of(page, limit.quantity) + '.');
+  }
+
   for (const BleedToHold& bleed : page.bleeds) {
-    std::string text = "  To hold " + bleed.limit + ": ";
+    std::string text = "To hold " + bleed.limit + ": ";
     if (bleed.litres_per_day)
       text += "bleed " + figure(*bleed.litres_per_day, 3) + " L a day more, " +
               figure(100 * *bleed.litres_per_day / page.tank.working_volume.v, 2) + " % of the tank.";
@@ -140,12 +159,12 @@ void say_what_holds(Lines& lines, const ForecastPage& page) {
       text += *bleed.load == 0
                   ? " As it is bled now it carries no work."
                   : " As it is bled now it carries " + figure(100 * *bleed.load, 2) + " % of this work.";
-    say(lines, text, 2);
+    say(std::move(text));
   }
+  return section;
 }
 
-void say_influences(Lines& lines, const ForecastPage& page) {
-  if (page.sensitivity.empty()) return;
+Section influences(const ForecastPage& page) {
   constexpr std::size_t most_limits = 3, most_inputs = 3;
   Table table({{"limit"}, {"input"}, {"±", Align::number}, {"moves it, days", Align::number}});
   for (std::size_t l = 0; l < std::min(most_limits, page.sensitivity.size()); ++l) {
@@ -155,13 +174,14 @@ void say_influences(Lines& lines, const ForecastPage& page) {
       table.add({i == 0 ? of_limit.limit : "", one.input, per_cent(one.u_rel), fixed(one.days, 1)});
     }
   }
-  if (table.empty()) return;
-  heading(lines, "What the days hang on");
-  append(lines, table.lines());
+  Section section{"What the days hang on", {}};
+  if (!table.empty()) section.blocks.emplace_back(std::move(table));
+  return section;
 }
 
-void say_cost(Lines& lines, const ForecastPage& page) {
-  heading(lines, "Cost and waste, a day");
+Section cost_and_waste(const ForecastPage& page) {
+  Section section{"Cost and waste, a day", {}};
+  const auto say = [&](std::string text) { section.blocks.emplace_back(Paragraph{std::move(text)}); };
   const forecast::Day& last = page.run.days.back();
   const double days = std::max(1, last.day);
   Table table({{"chemical"}, {"kg", Align::number}, {page.tank.currency, Align::number}});
@@ -171,28 +191,24 @@ void say_cost(Lines& lines, const ForecastPage& page) {
     if (one.kg > 0) table.add({one.stock, figure(one.kg / days, 3), fixed(one.cost / days, 2)});
   if (!table.empty()) {
     table.add({"all", "", fixed(last.cost / days, 2)});
-    append(lines, table.lines());
+    section.blocks.emplace_back(std::move(table));
   }
-  say(lines,
-      "  Waste " + figure(last.waste_L / days, 3) + " L, drag-out " + figure(last.drag_out_L / days, 3) +
-          " L, water to fill up " + figure(last.top_up_L / days, 3) + " L." +
-          (last.turnovers > 0 ? " Metal turnovers " + fixed(last.turnovers, 2) + " in all." : ""),
-      2);
+  say("Waste " + figure(last.waste_L / days, 3) + " L, drag-out " + figure(last.drag_out_L / days, 3) +
+      " L, water to fill up " + figure(last.top_up_L / days, 3) + " L." +
+      (last.turnovers > 0 ? " Metal turnovers " + fixed(last.turnovers, 2) + " in all." : ""));
   for (const auto& metal : page.run.ledger.metals)
     if (metal.dragged_kg + metal.bled_kg > 0)
-      say(lines,
-          "  " + metal.element + " lost: drag-out " + figure(1000 * metal.dragged_kg / days, 3) +
-              " g, bleed " + figure(1000 * metal.bled_kg / days, 3) + " g" +
-              (metal.cost > 0 ? ", worth " + figure(metal.cost / days, 3) + ' ' + page.tank.currency : "") +
-              '.',
-          2);
+      say(metal.element + " lost: drag-out " + figure(1000 * metal.dragged_kg / days, 3) + " g, bleed " +
+          figure(1000 * metal.bled_kg / days, 3) + " g" +
+          (metal.cost > 0 ? ", worth " + figure(metal.cost / days, 3) + ' ' + page.tank.currency : "") + '.');
+  return section;
 }
 
-void say_rinses(Lines& lines, const ForecastPage& page) {
+Section rinses(const ForecastPage& page) {
+  Section section{"Rinses on the last day, g/L", {}};
   const forecast::Rinsed& rinsed = page.run.rinsed;
-  if (rinsed.stages.empty()) return;
+  if (rinsed.stages.empty()) return section;
   const bath::BathType& type = page.forecast.chemistry().type();
-  heading(lines, "Rinses on the last day, g/L");
   const auto quantities = shown_quantities(page.run, type);
   std::vector<Column> columns = {{"rinse"}};
   for (const std::size_t q : quantities) columns.push_back({pretty(type.quantities[q].id), Align::number});
@@ -207,18 +223,18 @@ void say_rinses(Lines& lines, const ForecastPage& page) {
     row("to treatment, g a day", rinsed.kg_per_day, 1000);
     row("to treatment, g/L", rinsed.g_per_L, 1);
   }
-  append(lines, table.lines());
-  say(lines,
-      "  To treatment " + figure(rinsed.waste_L_per_day, 3) + " L a day" +
-          (rinsed.returned_L_per_day > 0
-               ? "; back to the tank " + figure(rinsed.returned_L_per_day, 3) + " L a day."
-               : "."),
-      2);
+  section.blocks.emplace_back(std::move(table));
+  section.blocks.emplace_back(
+      Paragraph{"To treatment " + figure(rinsed.waste_L_per_day, 3) + " L a day" +
+                (rinsed.returned_L_per_day > 0
+                     ? "; back to the tank " + figure(rinsed.returned_L_per_day, 3) + " L a day."
+                     : ".")});
+  return section;
 }
 
-void say_policies(Lines& lines, const ForecastPage& page) {
-  if (page.policies.empty()) return;
-  heading(lines, "Policies side by side, a day");
+Section side_by_side(const ForecastPage& page) {
+  Section section{"Policies side by side, a day", {}};
+  if (page.policies.empty()) return section;
   Table table({{"policy"},
                {"chemicals", Align::number},
                {"waste", Align::number},
@@ -232,11 +248,41 @@ void say_policies(Lines& lines, const ForecastPage& page) {
                s.holds ? "none in " + std::to_string(one.horizon_days) + " days"
                        : s.met.front().name + ", day " + fixed(*s.met.front().day, 1)});
   }
-  append(lines, table.lines());
+  section.blocks.emplace_back(std::move(table));
   const PolicySummary* best = cheapest_that_holds(page.policies);
-  say(lines,
-      best ? "  Cheapest that holds every limit: " + best->file + "." : "  None of them holds every limit.",
-      2);
+  section.blocks.emplace_back(Paragraph{best ? "Cheapest that holds every limit: " + best->file + "."
+                                             : "None of them holds every limit."});
+  return section;
+}
+
+/// From what it starts, and what it is no forecast of.
+std::vector<Block> origin(const ForecastPage& page) {
+  std::vector<Block> blocks;
+  const auto say = [&](std::string text) { blocks.emplace_back(Paragraph{std::move(text)}); };
+  say(std::string(deferral));
+  const std::string from = date_of(page, 0);
+  say("Policy: " + page.policy_file + ", " + std::to_string(page.run.days.back().day) + " days" +
+      (from.empty() ? "" : " from " + from) + ". State: " + page.state_from + ".");
+  if (page.bands)
+    say(std::to_string(page.bands->samples) +
+        " samples of what the policy and the bath type state as uncertain.");
+  for (const std::string& note : page.forecast.notes()) say("Not counted: " + note + '.');
+  if (!page.run.ended.empty())
+    blocks.emplace_back(Stop{"it ends before its horizon: " + page.run.ended.front().text()});
+  if (page.run.beyond)
+    blocks.emplace_back(Stop{"beyond what the constants describe from " +
+                             day_and_date(page, page.run.beyond->day) + " on: " + page.run.beyond->why +
+                             ". Neither pH nor solubility is told from there."});
+  if (page.run.indicative && (!page.run.beyond || page.run.indicative->day < page.run.beyond->day))
+    say("pH and solubility are indicative only from " + day_and_date(page, page.run.indicative->day) +
+        " on: " + page.run.indicative->why + '.');
+  return blocks;
+}
+
+/// In the order they are read.
+std::vector<Section> sections_of(const ForecastPage& page) {
+  return {limits_met(page),     influences(page), levels_by_day(page),
+          cost_and_waste(page), rinses(page),     side_by_side(page)};
 }
 
 }  // namespace
@@ -259,43 +305,29 @@ const PolicySummary* cheapest_that_holds(const std::vector<PolicySummary>& polic
 
 Lines forecast_sheet(const ForecastPage& page) {
   Lines lines;
-  const Day& last = page.run.days.back();
   tank_title(lines, page.tank, page.tank.working_volume.v, page.tank.temperature);
-  say(lines, deferral);
-  const std::string from = date_of(page, 0);
-  say(lines, "Policy: " + page.policy_file + ", " + std::to_string(last.day) + " days" +
-                 (from.empty() ? "" : " from " + from) + ". State: " + page.state_from + ".");
-  if (page.bands)
-    say(lines, std::to_string(page.bands->samples) +
-                   " samples of what the policy and the bath type state as uncertain.");
-  for (const std::string& note : page.forecast.notes()) say(lines, "Not counted: " + note + '.');
-  if (!page.run.ended.empty()) stops(lines, {"it ends before its horizon: " + page.run.ended.front().text()});
-  if (page.run.beyond)
-    stops(lines, {"beyond what the constants describe from " + day_and_date(page, page.run.beyond->day) +
-                  " on: " + page.run.beyond->why + ". Neither pH nor solubility is told from there."});
-  if (page.run.indicative && (!page.run.beyond || page.run.indicative->day < page.run.beyond->day))
-    say(lines, "pH and solubility are indicative only from " + day_and_date(page, page.run.indicative->day) +
-                   " on: " + page.run.indicative->why + '.');
-  heading(lines, "Limits met");
-  append(lines, limits_table(page));
-  std::vector<std::string> told;
-  for (const auto& limit : page.limits) {
-    if (limit.quantity.empty() || !limit.day || std::ranges::count(told, limit.quantity) > 0) continue;
-    told.push_back(limit.quantity);
-    say(lines,
-        "  " + page.forecast.chemistry().type().quantity(limit.quantity)->label +
-            ", g a day: " + turnover_of(page, limit.quantity) + '.',
-        2);
+  for (const Block& block : origin(page)) {
+    if (const auto* paragraph = std::get_if<Paragraph>(&block)) say(lines, paragraph->text);
+    if (const auto* stop = std::get_if<Stop>(&block)) stops(lines, {stop->text});
   }
-  say_what_holds(lines, page);
-  say_influences(lines, page);
-  heading(lines, "Levels by day, g/L");
-  append(lines, levels_by_day(page));
-  if (!page.steady_state) say(lines, "  It does not settle: " + page.why_unsettled + ".", 2);
-  say_cost(lines, page);
-  say_rinses(lines, page);
-  say_policies(lines, page);
+  for (const Section& section : sections_of(page)) append(lines, section);
   return lines;
+}
+
+Page forecast_page(const ForecastPage& page) {
+  Page out{page.tank.name + (page.tank.shop.empty() ? "" : ", " + page.tank.shop),
+           "Forecast of " + std::to_string(page.run.days.back().day) + " days",
+           {}};
+  out.add({"", origin(page)});
+  for (Section& section : sections_of(page)) out.add(std::move(section));
+  charts::Page drawn = forecast_charts(page);
+  Section figures{"Day by day", {}};
+  if (!drawn.charts.empty()) {
+    figures.blocks.emplace_back(Charts{std::move(drawn.charts)});
+    figures.blocks.emplace_back(Paragraph{drawn.foot});
+  }
+  out.add(std::move(figures));
+  return out;
 }
 
 }  // namespace bathwright::sheets

@@ -1,3 +1,4 @@
+#include <bathwright/charts/page_file.hpp>
 #include <bathwright/sheets/page.hpp>
 
 namespace bathwright::sheets {
@@ -67,6 +68,9 @@ struct Printer {
       out += element("p", escaped(one.role) + " " + element("span", escaped(one.name), "line")) + "\n";
     return out + "</div>\n";
   }
+  std::string operator()(const Charts& drawn) const {
+    return element("div", charts::svg_of({"", {}, drawn.charts, ""}), "charts") + "\n";
+  }
 };
 
 constexpr std::string_view style = R"(
@@ -88,6 +92,7 @@ th, td { border: 1px solid #999; padding: .1em .5em; text-align: left; font-vari
 .task p + p { margin-left: 1.2em }
 .signatures { display: grid; grid-template-columns: 1fr 1fr; gap: .6em 2em; margin-top: .5em; break-inside: avoid }
 .signatures p { display: flex; gap: .6em }
+.charts svg { width: 100%; height: auto }
 .line { flex: 1; border-bottom: 1px solid #000 }
 )";
 

@@ -2,6 +2,9 @@
 
 #include <bathwright/sheets/page_pdf.hpp>
 
+#include <cmath>
+#include <cstring>
+
 #include "pdf/flow.hpp"
 
 namespace bathwright::sheets {
@@ -26,15 +29,26 @@ cairo_status_t append(void* bytes, const unsigned char* data, unsigned int lengt
 
 class Document {
  public:
-  Document(const Page& page, Ink& ink, const Area& paper) : page_(page), ink_(ink), paper_(paper) {}
+  /// `ink` measures.
+  Document(const Page& page, const Ink& ink, const Area& paper) : page_(page), ink_(ink), paper_(paper) {}
 
   /// As large as puts all but the background on one page; where none does, as large as is easy to read.
-  void draw() {
+  [[nodiscard]] Flow laid_out() const {
     constexpr double largest = 10, easy = 9.5, smallest = 8, step = 0.2;
     std::size_t front_pages = 0;
     for (double size = largest; size > smallest - step / 2; size -= step)
-      if (const Flow flow = laid_out(Sizes(size), front_pages); front_pages == 1) return put(flow);
-    put(laid_out(Sizes(easy), front_pages));
+      if (Flow flow = laid_out(Sizes(size), front_pages); front_pages == 1) return flow;
+    return laid_out(Sizes(easy), front_pages);
+  }
+
+  void draw(const Flow& flow, std::size_t page, Ink& ink) const {
+    frame(page, flow.pages(), ink);
+    for (const pdf::Placed& one : flow.placed()) {
+      if (one.page != page) continue;
+      ink.shrink(one.left, one.top, one.shrunk);
+      one.piece.draw(ink, one.left, one.top);
+      ink.restore();
+    }
   }
 
  private:
@@ -62,64 +76,114 @@ class Document {
     return flow;
   }
 
-  void put(const Flow& flow) {
-    std::size_t page = 0;
-    frame(page, flow.pages());
-    for (const pdf::Placed& one : flow.placed()) {
-      while (page < one.page) {
-        ink_.next_page();
-        frame(++page, flow.pages());
-      }
-      ink_.shrink(one.left, one.top, one.shrunk);
-      one.piece.draw(ink_, one.left, one.top);
-      ink_.restore();
-    }
-    ink_.next_page();
-  }
-
   /// What stands on every sheet: whose it is above, which of how many below.
-  void frame(std::size_t page, std::size_t pages) {
+  void frame(std::size_t page, std::size_t pages, Ink& ink) const {
     constexpr double title_size = 12, foot_size = 7.5;
     const double right_edge = paper_.left + paper_.width;
     const pdf::Words right = ink_.words(page_.right, {title_size, true, pdf::colours.accent});
     pdf::Words left = ink_.words(page_.left, {title_size, true});
     if (const double room = paper_.width - right.width() - between_columns; left.width() > room)
       left = ink_.words(page_.left, {title_size * room / left.width(), true});
-    ink_.put(left, paper_.left, paper_.top + right.baseline() - left.baseline());
-    ink_.put(right, right_edge - right.width(), paper_.top);
-    ink_.line(paper_.left, paper_.top + title_room - 3, right_edge, pdf::colours.ink, 0.8);
+    ink.put(left, paper_.left, paper_.top + right.baseline() - left.baseline());
+    ink.put(right, right_edge - right.width(), paper_.top);
+    ink.line(paper_.left, paper_.top + title_room - 3, right_edge, pdf::colours.ink, 0.8);
     const pdf::Look quiet{foot_size, false, pdf::colours.quiet};
     const double foot = paper_.top + paper_.height - foot_size - 2;
-    ink_.put(ink_.words(page_.left + ". " + page_.right, quiet), paper_.left, foot);
+    ink.put(ink_.words(page_.left + ". " + page_.right, quiet), paper_.left, foot);
     const pdf::Words number =
         ink_.words("page " + std::to_string(page + 1) + " of " + std::to_string(pages), quiet);
-    ink_.put(number, right_edge - number.width(), foot);
+    ink.put(number, right_edge - number.width(), foot);
   }
 
   static constexpr double title_room = 18;
   const Page& page_;
-  Ink& ink_;
+  const Ink& ink_;
   Area paper_;
 };
+
+using SurfaceOwner = std::unique_ptr<cairo_surface_t, Surface>;
+
+struct Measures {
+  explicit Measures(Paper paper)
+      : across(paper == Paper::a4 ? 210 * a_mm : 612), down(paper == Paper::a4 ? 297 * a_mm : 792) {}
+  [[nodiscard]] Area area() const { return {margin, margin, across - 2 * margin, down - 2 * margin}; }
+  double across, down;  ///< points
+};
+
+Problem not_drawn(const Page& page, cairo_status_t status) {
+  return {Fault::io, page.left, std::string("could not be drawn: ") + cairo_status_to_string(status), "",
+          "Print the text or the HTML instead."};
+}
 
 }  // namespace
 
 Result<std::string> pdf_of(const Page& page, Paper paper) {
-  const double across = paper == Paper::a4 ? 210 * a_mm : 612, down = paper == Paper::a4 ? 297 * a_mm : 792;
+  const Measures sheet(paper);
   std::string bytes;
-  const std::unique_ptr<cairo_surface_t, Surface> surface(
-      cairo_pdf_surface_create_for_stream(append, &bytes, across, down));
+  const SurfaceOwner surface(cairo_pdf_surface_create_for_stream(append, &bytes, sheet.across, sheet.down));
   cairo_pdf_surface_set_metadata(surface.get(), CAIRO_PDF_METADATA_TITLE,
                                  (page.left + ", " + page.right).c_str());
   {
     Ink ink(surface.get());
-    Document(page, ink, {margin, margin, across - 2 * margin, down - 2 * margin}).draw();
+    const Document document(page, ink, sheet.area());
+    const Flow flow = document.laid_out();
+    for (std::size_t p = 0; p < flow.pages(); ++p) {
+      document.draw(flow, p, ink);
+      ink.next_page();
+    }
   }
   cairo_surface_finish(surface.get());
   if (const auto status = cairo_surface_status(surface.get()); status != CAIRO_STATUS_SUCCESS)
-    return Problem{Fault::io, page.left, std::string("could not be drawn: ") + cairo_status_to_string(status),
-                   "", "Print the text or the HTML instead."};
+    return not_drawn(page, status);
   return bytes;
+}
+
+namespace {
+
+/// Cairo's dots are whole numbers, 0x00RRGGBB.
+Picture picture_of(cairo_surface_t* surface) {
+  cairo_surface_flush(surface);
+  Picture picture{cairo_image_surface_get_width(surface), cairo_image_surface_get_height(surface), {}};
+  const unsigned char* data = cairo_image_surface_get_data(surface);
+  const auto stride = static_cast<std::size_t>(cairo_image_surface_get_stride(surface));
+  picture.rgba.reserve(4 * static_cast<std::size_t>(picture.width) *
+                       static_cast<std::size_t>(picture.height));
+  for (std::size_t y = 0; y < static_cast<std::size_t>(picture.height); ++y)
+    for (std::size_t x = 0; x < static_cast<std::size_t>(picture.width); ++x) {
+      std::uint32_t dot = 0;
+      std::memcpy(&dot, data + y * stride + 4 * x, sizeof dot);
+      for (const unsigned shift : {16U, 8U, 0U})
+        picture.rgba.push_back(static_cast<std::uint8_t>(dot >> shift & 0xFFU));
+      picture.rgba.push_back(0xFF);
+    }
+  return picture;
+}
+
+}  // namespace
+
+Result<std::vector<Picture>> pictures_of(const Page& page, Paper paper, double dots_per_inch) {
+  constexpr double points_an_inch = 72;
+  const Measures sheet(paper);
+  const double scale = dots_per_inch / points_an_inch;
+  const SurfaceOwner nowhere(cairo_pdf_surface_create_for_stream(nullptr, nullptr, sheet.across, sheet.down));
+  const Ink measuring(nowhere.get());
+  const Document document(page, measuring, sheet.area());
+  const Flow flow = document.laid_out();
+  std::vector<Picture> pictures;
+  for (std::size_t p = 0; p < flow.pages(); ++p) {
+    const SurfaceOwner surface(cairo_image_surface_create(CAIRO_FORMAT_RGB24,
+                                                          static_cast<int>(std::lround(scale * sheet.across)),
+                                                          static_cast<int>(std::lround(scale * sheet.down))));
+    {
+      Ink ink(surface.get(), scale);
+      ink.full_square(0, 0, std::max(sheet.across, sheet.down), pdf::colours.card);
+      document.draw(flow, p, ink);
+    }
+    if (const auto status = cairo_surface_status(surface.get()); status != CAIRO_STATUS_SUCCESS)
+      return not_drawn(page, status);
+    pictures.push_back(picture_of(surface.get()));
+  }
+  return pictures;
 }
 
 Result<Paper> paper_of(std::string_view name) {

@@ -54,6 +54,8 @@ struct Printer {
     if (!row.empty()) lines.push_back(std::move(row));
   }
 
+  void operator()(const Charts&) {}
+
   Lines lines;
 };
 

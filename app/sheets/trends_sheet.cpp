@@ -122,6 +122,7 @@ charts::Chart chart_of(const QuantityTrend& trend, const ControlChart& control, 
   charts::Chart chart;
   chart.title = title;
   chart.unit = trend.unit;
+  chart.level_of = trend.quantity;
   const double first = trend.points[control.points.front()].day,
                last = trend.points[control.points.back()].day;
   constexpr double few_days = 4;

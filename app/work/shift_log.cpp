@@ -94,6 +94,17 @@ Result<logbook::Signatures> signatures_for(const Session& session, const logbook
   return signatures;
 }
 
+Result<Logged> change_people(const Session& session, const PeopleChange& change) {
+  auto opened = open_log_to_write(session);
+  if (!opened) return opened.problems();
+  OpenLog open = *std::move(opened);
+  const auto signatures = signatures_for(session, open.log);
+  if (!signatures) return signatures.problems();
+  auto entry = change(open.log, *signatures);
+  if (!entry) return entry.problems();
+  return Logged{*std::move(entry), open.path, open.is_new};
+}
+
 Result<std::vector<logbook::Entry>> append_all(const Session& session, OpenLog& open,
                                                std::vector<logbook::NewEntry> entries) {
   const auto signatures = signatures_for(session, open.log);

@@ -46,6 +46,10 @@ Result<Logged> append_to_log(const Session& session, logbook::NewEntry entry);
 /// named as witness.
 Result<logbook::Signatures> signatures_for(const Session& session, const logbook::Logbook& log);
 
+/// A change to the log's people or rules, signed likewise.
+using PeopleChange = std::function<Result<logbook::Entry>(logbook::Logbook&, const logbook::Signatures&)>;
+Result<Logged> change_people(const Session& session, const PeopleChange& change);
+
 /// Several at once, all or none, into an open log; by and shift are filled in as above, the shift where an
 /// entry has none, by when it happened.
 Result<std::vector<logbook::Entry>> append_all(const Session& session, OpenLog& open,

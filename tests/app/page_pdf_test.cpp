@@ -42,6 +42,15 @@ Read read(const Page& page, Paper paper) {
   return read;
 }
 
+bathwright::charts::Chart chart_of(const std::string& title) {
+  bathwright::charts::Chart chart;
+  chart.title = title;
+  chart.unit = "g/L";
+  chart.x_title = "day";
+  chart.lines = {{"", bathwright::charts::Meaning::predicted, {0, 10, 20}, {1, 2, 4}}};
+  return chart;
+}
+
 Section of(std::string heading, std::vector<Block> blocks, Reading reading = Reading::working) {
   return {std::move(heading), std::move(blocks), reading};
 }
@@ -139,4 +148,36 @@ TEST_CASE("what is higher than a page is made smaller, not cut off", "[unit][she
 TEST_CASE("paper has two names", "[failure][sheets]") {
   CHECK(*paper_of("letter") == Paper::letter);
   CHECK_FALSE(paper_of("A5"));
+}
+
+TEST_CASE("charts stand on the sheet with their titles, two beside each other", "[unit][sheets]") {
+  Page page = short_page();
+  page.add(of("Day by day", {Charts{{chart_of("aluminium"), chart_of("sulfate"), chart_of("chloride")}}}));
+  const Read pdf = read(page, Paper::a4);
+  REQUIRE(pdf.pages.size() == 1);
+  for (const char* title : {"aluminium", "sulfate", "chloride"})
+    CHECK_THAT(pdf.pages[0], Catch::Contains(title));
+  CHECK_THAT(pdf.pages[0], Catch::Matches("[^]*aluminium[^\n]*sulfate[^]*"));
+  CHECK_THAT(html_of(page), Catch::Contains("<svg") && !Catch::Contains("<?xml"));
+}
+
+TEST_CASE("a sheet on the screen has the pages of the PDF, black on white", "[unit][sheets]") {
+  Page page = short_page();
+  constexpr int enough_for_two = 60;
+  for (int i = 1; i <= enough_for_two; ++i) page.add(of("", {step(i)}));
+  const auto pictures = pictures_of(page, Paper::letter, 72);
+  REQUIRE(pictures);
+  CHECK(pictures->size() == read(page, Paper::letter).pages.size());
+  for (const Picture& picture : *pictures) {
+    CHECK(picture.width == 612);
+    CHECK(picture.height == 792);
+    REQUIRE(picture.rgba.size() == 4U * 612 * 792);
+    CHECK(picture.rgba[0] == 0xFF);
+    int dark = 0;
+    for (std::size_t i = 0; i < picture.rgba.size(); i += 4) {
+      dark += picture.rgba[i] < 0x60 && picture.rgba[i + 1] < 0x60 ? 1 : 0;
+      if (picture.rgba[i + 3] != 0xFF) FAIL("not opaque");
+    }
+    CHECK(dark > 500);
+  }
 }

@@ -42,16 +42,9 @@ int list(const Context& context) {
 }
 
 /// Opens the log, collects the signer's PINs, and tells what `change` logged.
-template <class Change>
-int changed(const Context& context, Change change) {
-  auto opened = open_log_to_write(context);
-  if (!opened) return fail(context, opened.problems());
-  OpenLog open = *std::move(opened);
-  const auto signatures = signatures_for(context, open.log);
-  if (!signatures) return fail(context, signatures.problems());
-  const Result<logbook::Entry> entry = change(open.log, *signatures);
-  if (!entry) return fail(context, entry.problems());
-  return tell(context, Logged{*entry, open.path, open.is_new});
+int changed(const Context& context, const PeopleChange& change) {
+  const auto logged = change_people(context, change);
+  return logged ? tell(context, *logged) : fail(context, logged.problems());
 }
 
 /// A PIN typed twice, since nobody sees it; from a file once.

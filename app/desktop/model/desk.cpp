@@ -5,7 +5,6 @@
 #include <bathwright/sheets/hand_over_sheet.hpp>
 #include <bathwright/sheets/log_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
-#include <bathwright/sheets/page_pdf.hpp>
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
 
@@ -14,6 +13,7 @@
 #include "work/demonstration.hpp"
 #include "work/dose_document.hpp"
 #include "work/hand_over_document.hpp"
+#include "work/print_command.hpp"
 #include "work/slip.hpp"
 #include "work/user_folders.hpp"
 #include "work/what_must_not_meet.hpp"
@@ -49,14 +49,6 @@ sheets::Paper paper_of(const Settings& settings) {
   return settings.letter ? sheets::Paper::letter : sheets::Paper::a4;
 }
 
-/// What came of printing, in words: what is signed stands whether or not a file of it could be written.
-std::string print(const sheets::Page& page, sheets::Paper paper, const std::filesystem::path& file) {
-  const auto pdf = sheets::pdf_of(page, paper);
-  const Outcome written = pdf ? work::write_whole(file, *pdf) : Outcome(pdf.problems());
-  return written ? "To print: " + file.string() + "."
-                 : "It could not be printed: " + text(written.problems());
-}
-
 }  // namespace
 
 Desk::Desk(work::Session session, const std::filesystem::path& shop, std::function<void()> wake)
@@ -66,6 +58,7 @@ Desk::Desk(work::Session session, const std::filesystem::path& shop, std::functi
       settings_(kept_settings(settings_file())),
       units_(settings_),
       signing_(wake_),
+      printing_(wake_),
       tank_job_(
           [work = std::make_shared<TankWork>()](const Question& question, const std::stop_token& stop,
                                                 const auto& give) { work->answer(question, stop, give); },
@@ -78,7 +71,13 @@ Desk::Desk(work::Session session, const std::filesystem::path& shop, std::functi
                     wake_),
       trends_job_([](const TrendsQuestion& question, const std::stop_token&,
                      const auto& give) { give(read_trends(question)); },
-                  wake_) {
+                  wake_),
+      bath_types_job_([](const BathTypesQuestion& question, const std::stop_token&,
+                         const auto& give) { read_bath_types(question, give); },
+                      wake_),
+      preview_job_([](const std::shared_ptr<const PrintedSheet>& sheet, const std::stop_token&,
+                      const auto& give) { give(preview_of(*sheet)); },
+                   wake_) {
   const std::filesystem::path& folder = shop.empty() ? settings_.shop : shop;
   if (!folder.empty()) open_shop(folder, !shop.empty());
   show();
@@ -90,11 +89,15 @@ const bath::Tank* Desk::tank() const {
 
 bool Desk::working() const {
   return tank_job_.working() || log_job_.working() || forecast_job_.working() || trends_job_.working() ||
-         signing_.busy();
+         bath_types_job_.working() || preview_job_.working() || printing_.busy() || signing_.busy();
 }
 
 HeadUnits Desk::head_units() const {
-  return {settings_.volume, settings_.temperature == "°F" ? "degF" : "degC", units_.concentration()};
+  HeadUnits heads{settings_.volume, settings_.temperature, {}};
+  if (worked_ && worked_->shop)
+    for (const bath::Quantity& quantity : worked_->shop->type().quantities)
+      heads.value[quantity.id] = units_.typed(quantity);
+  return heads;
 }
 
 void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
@@ -143,119 +146,138 @@ void Desk::open_tank(int tank) {
 
 void Desk::handle(const Intent& intent) {
   changed_ = true;
-  std::visit(
-      Overloaded{[&](const GoTo& to) {
-                   view_.page = to.page;
-                   fault_.clear();
-                   said_.clear();
-                   if (to.page == PageName::forecast && !forecasted_) ask_forecast();
-                   if (to.page == PageName::trends) ask_trends();
-                   if (to.page == PageName::bath_types) list_bath_types();
-                 },
-                 [&](const OpenTank& open) {
-                   fault_.clear();
-                   if (open.tank != open_) open_tank(open.tank);
-                 },
-                 [&](const TypeReading& typed) {
-                   if (draft_) draft_->type(typed, now_in_shop(log_.calendar)), draft_changed();
-                 },
-                 [&](const ChooseMethod& chosen) {
-                   if (draft_) draft_->choose(chosen), draft_changed();
-                 },
-                 [&](const UndoTyping&) {
-                   if (draft_) draft_->undo(), draft_changed();
-                 },
-                 [&](const RedoTyping&) {
-                   if (draft_) draft_->redo(), draft_changed();
-                 },
-                 [&](const NewSample&) {
-                   if (draft_) draft_->start_again(blank_), draft_changed();
-                 },
-                 [&](const ChoosePlan& chosen) {
-                   plan_ = chosen.plan;
-                   edited_.clear();
-                   ask();
-                 },
-                 [&](const DragAmount& dragged) { drag(dragged); },
-                 [&](const AddChemical& added) { add_chemical(added.chemical); },
-                 [&](const BackToPlan&) {
-                   edited_.clear();
-                   ask();
-                 },
-                 [&](const LogAnalysis& asked) { log_analysis(asked.names); },
-                 [&](const IssueSlip& asked) { issue_slip(asked.names); },
-                 [&](const StepDone& asked) {
-                   if (log_.slip) log_entry(work::step_done(*log_.slip, asked.step), asked.names);
-                 },
-                 [&](const ApproveSlip& asked) {
-                   if (log_.slip) log_entry(work::approval(*log_.slip), asked.names);
-                 },
-                 [&](const CloseSlip& asked) {
-                   if (log_.slip)
-                     log_entry(work::closing(*log_.slip, asked.cancelled, asked.reason), asked.names);
-                 },
-                 [&](const HandOver& asked) { hand_over(asked.names); },
-                 [&](const SetShifts& asked) { set_shifts(asked); },
-                 [&](const AdmitPerson& asked) { admit(asked); },
-                 [&](const ChoosePolicy& chosen) {
-                   policy_ = chosen.policy;
-                   levers_.reset();
-                   ask_forecast();
-                 },
-                 [&](const MoveLever& lever) {
-                   if (!forecasted_) return;
-                   Levers levers = levers_.value_or(forecasted_->levers);
-                   if (lever.lever == 0) levers.bleed_L_per_day = std::max(0.0, lever.value);
-                   if (lever.lever == 1) levers.drag_out = std::max(0.0, lever.value);
-                   if (lever.lever == 2) levers.load = std::max(0.0, lever.value);
-                   if (lever.lever == 3) levers.horizon_days = std::max(1, static_cast<int>(lever.value));
-                   levers_ = levers;
-                   ask_forecast();
-                 },
-                 [&](const StopSampling&) { forecast_job_.stop(); },
-                 [&](const FilterLog& filter) {
-                   filter_ = filter.text;
-                   ask_log();
-                 },
-                 [&](const ShowEntry& entry) {
-                   shown_entry_ = entry.seq;
-                   ask_log();
-                 },
-                 [&](const AskSource& asked) {
-                   std::vector<std::string> names;
-                   view_.source.species = asked.species;
-                   view_.source.text =
-                       work::sources_sheet(asked.species, work::constants_about(asked.species, names));
-                 },
-                 [&](const SaveCharts& asked) { save(asked); },
-                 [&](const SetPaper& asked) {
-                   settings_.letter = asked.letter;
-                   settings_changed();
-                 },
-                 [&](const OpenFolder& asked) { open_shop(asked.folder, true); },
-                 [&](const OpenDemonstration&) {
-                   if (const auto folder = work::demonstration_shop())
-                     open_shop(*folder, true);
-                   else
-                     fault_ = text(folder.problems());
-                 },
-                 [&](const SetLook& look) {
-                   settings_.scale = look.scale;
-                   settings_.dark = look.dark;
-                   settings_changed();
-                 },
-                 [&](const SetUnits& chosen) {
-                   const auto at = [](const std::vector<std::string>& all, int i) {
-                     return all[static_cast<std::size_t>(std::clamp(i, 0, static_cast<int>(all.size()) - 1))];
-                   };
-                   settings_.concentration = at(Units::concentrations(), chosen.concentration);
-                   settings_.volume = at(Units::volumes(), chosen.volume);
-                   settings_.temperature = at(Units::temperatures(), chosen.temperature);
-                   units_ = Units(settings_);
-                   settings_changed();
-                   ask();
-                 }},
-      intent);
+  std::visit(Overloaded{[&](const GoTo& to) {
+                          view_.page = to.page;
+                          shows_printed_ = false;
+                          fault_.clear();
+                          said_.clear();
+                          if (to.page == PageName::forecast && !forecasted_) ask_forecast();
+                          if (to.page == PageName::trends) ask_trends();
+                          if (to.page == PageName::bath_types) {
+                            examined_.reset();
+                            bath_types_job_.ask({session_, {}});
+                          }
+                        },
+                        [&](const OpenTank& open) {
+                          fault_.clear();
+                          if (open.tank != open_) open_tank(open.tank);
+                        },
+                        [&](const TypeReading& typed) {
+                          if (draft_) draft_->type(typed, now_in_shop(log_.calendar)), draft_changed();
+                        },
+                        [&](const ChooseMethod& chosen) {
+                          if (draft_) draft_->choose(chosen), draft_changed();
+                        },
+                        [&](const UndoTyping&) {
+                          if (draft_) draft_->undo(), draft_changed();
+                        },
+                        [&](const RedoTyping&) {
+                          if (draft_) draft_->redo(), draft_changed();
+                        },
+                        [&](const NewSample&) {
+                          if (draft_) draft_->start_again(blank_), draft_changed();
+                        },
+                        [&](const ChoosePlan& chosen) {
+                          plan_ = chosen.plan;
+                          edited_.clear();
+                          ask();
+                        },
+                        [&](const DragAmount& dragged) { drag(dragged); },
+                        [&](const AddChemical& added) { add_chemical(added.chemical); },
+                        [&](const BackToPlan&) {
+                          edited_.clear();
+                          ask();
+                        },
+                        [&](const LogAnalysis& asked) { log_analysis(asked.names); },
+                        [&](const IssueSlip& asked) { issue_slip(asked.names); },
+                        [&](const StepDone& asked) {
+                          if (log_.slip) log_entry(work::step_done(*log_.slip, asked.step), asked.names);
+                        },
+                        [&](const ApproveSlip& asked) {
+                          if (log_.slip) log_entry(work::approval(*log_.slip), asked.names);
+                        },
+                        [&](const CloseSlip& asked) {
+                          if (log_.slip)
+                            log_entry(work::closing(*log_.slip, asked.cancelled, asked.reason), asked.names);
+                        },
+                        [&](const HandOver& asked) { hand_over(asked.names); },
+                        [&](const SetShifts& asked) { set_shifts(asked); },
+                        [&](const AdmitPerson& asked) { admit(asked); },
+                        [&](const RetirePerson& asked) { retire(asked); },
+                        [&](const ExaminePlugin& asked) {
+                          examined_.reset();
+                          bath_types_job_.ask({session_, asked.file});
+                        },
+                        [&](const AllowPlugin& asked) { allow_plugin(asked); },
+                        [&](const WithdrawPlugin& asked) { withdraw_plugin(asked); },
+                        [&](const ChoosePolicy& chosen) {
+                          policy_ = chosen.policy;
+                          levers_.reset();
+                          ask_forecast();
+                        },
+                        [&](const MoveLever& lever) {
+                          if (!forecasted_) return;
+                          Levers levers = levers_.value_or(forecasted_->levers);
+                          if (lever.lever == 0) levers.bleed_L_per_day = std::max(0.0, lever.value);
+                          if (lever.lever == 1) levers.drag_out = std::max(0.0, lever.value);
+                          if (lever.lever == 2) levers.load = std::max(0.0, lever.value);
+                          if (lever.lever == 3)
+                            levers.horizon_days = std::max(1, static_cast<int>(lever.value));
+                          levers_ = levers;
+                          ask_forecast();
+                        },
+                        [&](const StopSampling&) { forecast_job_.stop(); },
+                        [&](const FilterLog& filter) {
+                          filter_ = filter.text;
+                          ask_log();
+                        },
+                        [&](const ShowEntry& entry) {
+                          shown_entry_ = entry.seq;
+                          ask_log();
+                        },
+                        [&](const AskSource& asked) {
+                          std::vector<std::string> names;
+                          view_.source.species = asked.species;
+                          view_.source.text =
+                              work::sources_sheet(asked.species, work::constants_about(asked.species, names));
+                        },
+                        [&](const SaveCharts& asked) { save(asked); },
+                        [&](const PrintForecast&) { print_forecast(); },
+                        [&](const ShowPrinted&) { show_printed(); },
+                        [&](const ClosePrinted&) {
+                          shows_printed_ = false;
+                          preview_.reset();
+                        },
+                        [&](const PrintSheet&) { print_sheet(); },
+                        [&](const SetPrintCommand& asked) {
+                          settings_.print_command = asked.command;
+                          settings_changed();
+                        },
+                        [&](const SetPaper& asked) {
+                          settings_.letter = asked.letter;
+                          settings_changed();
+                        },
+                        [&](const OpenFolder& asked) { open_shop(asked.folder, true); },
+                        [&](const OpenDemonstration&) {
+                          if (const auto folder = work::demonstration_shop())
+                            open_shop(*folder, true);
+                          else
+                            fault_ = text(folder.problems());
+                        },
+                        [&](const SetLook& look) {
+                          settings_.scale = look.scale;
+                          settings_.dark = look.dark;
+                          settings_changed();
+                        },
+                        [&](const SetUnit& set) {
+                          if (draft_) draft_->write_out(head_units());
+                          const UnitChoice& choice = unit_choices().at(static_cast<std::size_t>(set.which));
+                          settings_.*choice.kept = choice.all.at(static_cast<std::size_t>(set.chosen));
+                          units_ = Units(settings_);
+                          settings_changed();
+                          ask();
+                        }},
+             intent);
 }
 
 void Desk::settings_changed() {
@@ -263,7 +285,8 @@ void Desk::settings_changed() {
 }
 
 void Desk::draft_changed() {
-  if (const Outcome kept = keep_draft(draft_file(), draft_->now()); !kept) fault_ = text(kept.problems());
+  if (const Outcome kept = keep_draft(draft_file(), with_units(draft_->now(), head_units())); !kept)
+    fault_ = text(kept.problems());
   edited_.clear();
   plan_ = 0;
   ask();
@@ -284,7 +307,8 @@ void Desk::drag(const DragAmount& drag) {
   auto& [id, kg] = edited_[static_cast<std::size_t>(drag.addition)];
   const matter::StockChemical* stock = stock_of(*tank(), id);
   if (!stock) return;
-  kg = stock->liquid ? drag.amount * stock->kg_per_L : drag.amount;
+  const double amount = drag.amount / units_.amount_unit(stock->liquid ? "L" : "kg").per_one;
+  kg = stock->liquid ? amount * stock->kg_per_L : amount;
   ask();
 }
 
@@ -328,26 +352,30 @@ void Desk::ask_forecast() {
 }
 
 void Desk::ask_trends() {
-  view_.trends = {"reading the log ...", {}, {}};
+  trended_.reset();
   if (const bath::Tank* open = tank()) trends_job_.ask({session_, *open});
 }
 
-void Desk::list_bath_types() {
-  view_.bath_types.clear();
-  const auto types = work::known_bath_types(session_);
-  for (const auto& listed : types.list()) {
-    BathTypeRow row{listed.id,
-                    listed.version,
-                    std::string(plugin_host::name(listed.state)),
-                    listed.path.filename().string(),
-                    "",
-                    charts::State::in_window};
-    if (row.id.empty()) row.id = listed.path.stem().stem().string();
-    if (listed.state != plugin_host::State::ready)
-      row.mark = listed.state == plugin_host::State::shadowed ? charts::State::act : charts::State::stop;
-    for (const Problem& problem : listed.problems) row.why += (row.why.empty() ? "" : " ") + problem.text();
-    view_.bath_types.push_back(std::move(row));
+void Desk::allow_plugin(const AllowPlugin& asked) {
+  if (!examined_ || !examined_->found || examined_->found->sha256 != asked.sha256) return;
+  if (const Outcome allowed = work::allow_plugin(session_, examined_->file, *examined_->found); !allowed) {
+    fault_ = text(allowed.problems());
+    return;
   }
+  said_ = "Allowed: " + examined_->file.string() + ".";
+  examined_.reset();
+  bath_types_job_.ask({session_, {}});
+  ask();  // the tank that is open may have waited for it
+}
+
+void Desk::withdraw_plugin(const WithdrawPlugin& asked) {
+  const auto forgotten = work::forget_plugin(session_, asked.sha256);
+  if (!forgotten) {
+    fault_ = text(forgotten.problems());
+    return;
+  }
+  said_ = "No longer allowed: " + forgotten->front().id + ", " + forgotten->front().file + ".";
+  bath_types_job_.ask({session_, {}});
 }
 
 void Desk::log_analysis(const Names& names) {
@@ -367,8 +395,11 @@ void Desk::log_analysis(const Names& names) {
 void Desk::issue_slip(const Names& names) {
   if (!worked_ || !worked_->analysed || !worked_->sheet || !shown_plan(*worked_, plan_)) return;
   said_.clear();
+  if (signing_.busy()) return;
+  being_printed_ = std::make_shared<PrintedSheet>();
   signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_,
-                  paper = paper_of(settings_), folder = printed()]() -> Result<std::string> {
+                  printed = being_printed_, paper = paper_of(settings_),
+                  folder = printed()]() -> Result<std::string> {
     // The log may have gone on since the readings were worked out.
     const auto fresh = work::analyse(session, *worked.shop, worked.readings_file.string());
     if (!fresh) return fresh.problems();
@@ -388,9 +419,10 @@ void Desk::issue_slip(const Names& names) {
         work::log_dose(session, *worked.shop, worked.readings_file.string(), *fresh, doc, true);
     if (!logged) return logged.problems();
     const std::optional<work::LoggedDose> issued = *logged;
-    const auto page = work::page_of(session, *worked.shop, {*fresh, sheet, stops, *history, issued});
+    *printed = {work::page_of(session, *worked.shop, {*fresh, sheet, stops, *history, issued}), paper,
+                folder / ("slip-" + std::to_string(*logged->slip) + ".pdf")};
     return "Slip " + std::to_string(*logged->slip) + " is issued, in " + logged->path.string() + ". " +
-           print(page, paper, folder / ("slip-" + std::to_string(*logged->slip) + ".pdf"));
+           print(*printed);
   });
 }
 
@@ -422,13 +454,22 @@ void Desk::admit(const AdmitPerson& asked) {
   signing_.start([session = signed_by(session_, asked.names), asked]() -> Result<std::string> {
     const auto role = logbook::role_of(asked.role);
     if (!role) return role.problems();
-    auto open = work::open_log_to_write(session);
-    if (!open) return open.problems();
-    const auto signatures = work::signatures_for(session, open->log);
-    if (!signatures) return signatures.problems();
-    const auto entry = work::OpenLog(*std::move(open)).log.admit(asked.name, *role, asked.pin, *signatures);
-    if (!entry) return entry.problems();
-    return asked.name + " may sign now: entry " + std::to_string(entry->seq) + ".";
+    const auto logged = work::change_people(session, [&](logbook::Logbook& log, const auto& signatures) {
+      return log.admit(asked.name, *role, asked.pin, signatures);
+    });
+    if (!logged) return logged.problems();
+    return asked.name + " may sign now: entry " + std::to_string(logged->entry.seq) + ".";
+  });
+}
+
+void Desk::retire(const RetirePerson& asked) {
+  said_.clear();
+  signing_.start([session = signed_by(session_, asked.names), asked]() -> Result<std::string> {
+    const auto logged = work::change_people(session, [&](logbook::Logbook& log, const auto& signatures) {
+      return log.retire(asked.name, signatures);
+    });
+    if (!logged) return logged.problems();
+    return asked.name + " signs nothing any more: entry " + std::to_string(logged->entry.seq) + ".";
   });
 }
 
@@ -452,24 +493,32 @@ void Desk::hand_over(const Names& names) {
     return;
   }
   said_.clear();
+  if (signing_.busy()) return;
+  being_printed_ = std::make_shared<PrintedSheet>();
   signing_.start([session = signed_by(session_, names), told = *log_.told, calendar = *log_.calendar,
-                  paper = paper_of(settings_), folder = printed()]() -> Result<std::string> {
+                  printed = being_printed_, paper = paper_of(settings_),
+                  folder = printed()]() -> Result<std::string> {
     logbook::NewEntry entry;
     entry.kind = logbook::EntryKind::hand_over;
     entry.body = work::text_of(work::hand_over_document(told));
     const auto logged = work::append_to_log(session, std::move(entry));
     if (!logged) return logged.problems();
-    return work::words(*logged) + " " +
-           print(sheets::hand_over_page(told, calendar, work::signer(session)), paper,
-                 folder / ("hand-over-" + std::to_string(logged->entry.seq) + ".pdf"));
+    *printed = {sheets::hand_over_page(told, calendar, work::signer(session)), paper,
+                folder / ("hand-over-" + std::to_string(logged->entry.seq) + ".pdf")};
+    return work::words(*logged) + " " + print(*printed);
   });
 }
 
 void Desk::save(const SaveCharts& asked) {
   fault_.clear();
   charts::Page page;
-  if (asked.charts == Charts::forecast && forecasted_) page = forecasted_->page;
+  if (asked.charts == Charts::forecast && forecasted_) {
+    page = forecasted_->page;
+    page.charts = view_.forecast.charts;  // in the units that are seen
+  }
   if (asked.charts == Charts::trends) page = {tank()->name, {"control charts"}, view_.trends.charts, ""};
+  if (asked.charts == Charts::path)
+    page = {tank()->name, {"along the planned additions"}, view_.chemistry.path, "Dashed: computed."};
   const Outcome saved = page.charts.empty()
                             ? Outcome(Problem{Fault::bad_input, asked.file, "there is nothing to save yet",
                                               "", "Work it out first."})
@@ -478,6 +527,35 @@ void Desk::save(const SaveCharts& asked) {
     said_ = "Saved as " + std::filesystem::absolute(asked.file).string() + ".";
   else
     fault_ = text(saved.problems());
+}
+
+void Desk::print_forecast() {
+  if (!forecasted_ || !forecasted_->sheet) return;
+  const std::string name = "forecast-" + forecasted_->tank_file.stem().string() + ".pdf";
+  printed_sheet_ = std::make_shared<const PrintedSheet>(
+      PrintedSheet{*forecasted_->sheet, paper_of(settings_), printed() / name});
+  fault_.clear();
+  said_ = print(*printed_sheet_);
+  show_printed();
+}
+
+void Desk::show_printed() {
+  if (!printed_sheet_) return;
+  shows_printed_ = true;
+  preview_.reset();
+  print_said_.clear();
+  print_fault_.clear();
+  preview_job_.ask(printed_sheet_);
+}
+
+void Desk::print_sheet() {
+  if (!printed_sheet_ || printing_.busy()) return;
+  print_said_.clear();
+  print_fault_.clear();
+  printing_.start([command = settings_.print_command, file = printed_sheet_->file]() -> Result<std::string> {
+    if (const Outcome sent = work::print_file(command, file); !sent) return sent.problems();
+    return "Sent to the printer: " + file.filename().string() + ".";
+  });
 }
 
 std::filesystem::path Desk::printed() const {
@@ -519,10 +597,26 @@ bool Desk::update() {
   }
   if (auto answer = trends_job_.take()) {
     changed_ = true;
-    if (tank() && answer->tank == tank()->name) view_.trends = std::move(answer->view);
+    if (tank() && answer->tank == tank()->name) trended_ = std::move(answer);
+  }
+  if (auto answer = bath_types_job_.take()) {
+    changed_ = true;
+    view_.bath_types.rows = std::move(answer->rows);
+    examined_ = std::move(answer->examination);
+  }
+  if (auto answer = preview_job_.take()) {
+    changed_ = true;
+    preview_ = std::move(answer);
+    print_fault_ = text(preview_->problems);
+  }
+  if (auto came = printing_.take()) {
+    changed_ = true;
+    (*came ? print_said_ : print_fault_) = *came ? **came : text(came->problems());
   }
   if (auto came = signing_.take()) {
     changed_ = true;
+    const auto sheet = std::exchange(being_printed_, nullptr);
+    if (sheet && !sheet->file.empty()) printed_sheet_ = sheet;
     if (*came) {
       said_ = **came;
       fault_.clear();
@@ -543,17 +637,10 @@ bool Desk::update() {
 void Desk::show() {
   view_.first_start = open_ < 0;
   view_.fault = fault_;
-  view_.settings = {settings_.shop.string(),
-                    session_.log_file,
-                    Units::concentrations(),
-                    Units::volumes(),
-                    Units::temperatures(),
-                    index_of(Units::concentrations(), settings_.concentration),
-                    index_of(Units::volumes(), settings_.volume),
-                    index_of(Units::temperatures(), settings_.temperature),
-                    settings_.scale,
-                    settings_.dark,
-                    settings_.letter};
+  view_.settings = {settings_.shop.string(), session_.log_file, settings_.print_command, {},
+                    settings_.scale,         settings_.dark,    settings_.letter};
+  for (const UnitChoice& choice : unit_choices())
+    view_.settings.units.push_back({choice.what, choice.all, index_of(choice.all, settings_.*choice.kept)});
   if (open_ < 0) return;
   view_.status.doing = signing_.busy()           ? "signing ..."
                        : forecast_job_.working() ? "forecasting ..."
@@ -573,14 +660,14 @@ void Desk::show() {
   view_.readings.can_undo = draft_ && draft_->can_undo();
   view_.readings.can_redo = draft_ && draft_->can_redo();
   view_.readings.working = tank_job_.working();
-  view_.readings.units = {settings_.volume, settings_.temperature, units_.concentration()};
+  view_.readings.units = {settings_.volume, settings_.temperature};
   if (!draft_ && worked)
     for (const Problem& problem : worked->problems) view_.readings.faults.push_back(problem.text());
   view_.state = worked ? state_view(*worked, shown_plan(*worked, plan_), units_) : StateView{};
   view_.additions = worked ? additions_view(*worked, plan_, edited_, units_) : AdditionsView{};
   view_.additions.working = tank_job_.working();
   view_.chemistry = worked ? chemistry_view(*worked, units_) : ChemistryView{};
-  view_.slip = slip_view(log_.slip, log_.calendar);
+  view_.slip = slip_view(log_.slip, log_.calendar, units_);
   view_.sign = {work::signer(session_),
                 session_.log_file,
                 fault_,
@@ -592,8 +679,8 @@ void Desk::show() {
   view_.people.clear();
   for (const logbook::Person& person : log_.people) {
     if (person.active) view_.sign.people.push_back(person.name);
-    view_.people.push_back(
-        {person.name, std::string(logbook::name(person.role)), person.active ? "yes" : "no more"});
+    view_.people.push_back({person.name, std::string(logbook::name(person.role)),
+                            person.active ? "yes" : "no more", person.active});
   }
   view_.shift = shift_view(log_, work::wall_clock().utc_now());
   view_.log = log_view(log_);
@@ -602,8 +689,22 @@ void Desk::show() {
   view_.log.file = session_.log_file;
   view_.log.shown = shown_entry_;
   view_.hand_over = {log_.hand_over_text, log_.calendar.has_value()};
+  view_.printed = {printed_sheet_ ? printed_sheet_->file.string() : "",
+                   shows_printed_,
+                   printing_.busy(),
+                   settings_.print_command,
+                   print_said_,
+                   print_fault_,
+                   {}};
+  if (preview_) view_.printed.sheets = preview_->sheets;
+  view_.bath_types.working = bath_types_job_.working();
+  view_.bath_types.examined.reset();
+  if (examined_) view_.bath_types.examined = examined_view(*examined_);
   const double progress = forecast_job_.working() ? forecast_work_.progress() : 0;
   view_.forecast = forecasted_ ? forecast_view(*forecasted_, units_) : ForecastView{};
+  const bath::BathType* type = worked && worked->shop ? &worked->shop->type() : nullptr;
+  view_.trends =
+      trended_ ? trends_view(*trended_, type, units_) : TrendsView{"reading the log ...", {}, {}, {}};
   if (policies_.empty())
     view_.forecast.empty =
         "No policy of this tank is in the folder policies: copy one from the demonstration shop and "

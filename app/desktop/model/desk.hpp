@@ -5,9 +5,11 @@
 
 #include "../panels/intent.hpp"
 #include "../panels/view.hpp"
+#include "bath_types_work.hpp"
 #include "forecast_work.hpp"
 #include "latest_job.hpp"
 #include "log_work.hpp"
+#include "preview_work.hpp"
 #include "reading_draft.hpp"
 #include "settings.hpp"
 #include "shop_folder.hpp"
@@ -45,14 +47,19 @@ class Desk {
   void ask_log();
   void ask_forecast();
   void ask_trends();
-  void list_bath_types();
+  void allow_plugin(const AllowPlugin& asked);
+  void withdraw_plugin(const WithdrawPlugin& asked);
   void log_analysis(const Names& names);
   void issue_slip(const Names& names);
   void log_entry(Result<logbook::NewEntry> entry, const Names& names);
   void admit(const AdmitPerson& admit);
+  void retire(const RetirePerson& asked);
   void set_shifts(const SetShifts& set);
   void hand_over(const Names& names);
   void save(const SaveCharts& save);
+  void print_forecast();
+  void show_printed();
+  void print_sheet();
   /// Where slips and hand-overs go as PDF: beside the log.
   [[nodiscard]] std::filesystem::path printed() const;
   void settings_changed();
@@ -81,15 +88,24 @@ class Desk {
   int policy_ = 0;
   std::optional<Levers> levers_;
   std::optional<Forecasted> forecasted_;
+  std::optional<TrendsAnswer> trended_;
+  std::optional<Examination> examined_;
+  std::shared_ptr<PrintedSheet> being_printed_;        ///< filled by what is being signed
+  std::shared_ptr<const PrintedSheet> printed_sheet_;  ///< the last one
+  std::optional<Preview> preview_;
+  bool shows_printed_ = false;
+  std::string print_said_, print_fault_;
   DeskView view_;
   bool changed_ = true;
-  Signing signing_;
+  Signing signing_, printing_;
   ForecastWork forecast_work_;
   // Last: their threads use the works above and nothing else.
   LatestJob<Question, Worked> tank_job_;
   LatestJob<LogQuestion, LogNow> log_job_;
   LatestJob<ForecastQuestion, Forecasted> forecast_job_;
   LatestJob<TrendsQuestion, TrendsAnswer> trends_job_;
+  LatestJob<BathTypesQuestion, BathTypesAnswer> bath_types_job_;
+  LatestJob<std::shared_ptr<const PrintedSheet>, Preview> preview_job_;
 };
 
 }  // namespace bathwright::desktop

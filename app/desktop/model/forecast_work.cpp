@@ -1,6 +1,9 @@
 #include "forecast_work.hpp"
 
+#include <bathwright/sheets/names.hpp>
 #include <thread>
+
+#include "work/bleeds_to_hold.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -16,6 +19,18 @@ forecast::Policy moved(forecast::Policy policy, const Levers& levers) {
   for (forecast::Work& work : policy.work) work.per_shift.value *= levers.load;
   policy.horizon_days = levers.horizon_days;
   return policy;
+}
+
+/// What of a policy is not as its file has it: ", with bleed 120 L a day, drag-out 1.2 times".
+std::string changes(const forecast::Policy& policy, const Levers& levers) {
+  const Levers written = levers_of(policy);
+  std::string text;
+  const auto add = [&](const std::string& words) { text += (text.empty() ? " with " : ", ") + words; };
+  if (levers.bleed_L_per_day != written.bleed_L_per_day)
+    add("bleed " + sheets::figure(levers.bleed_L_per_day, 3) + " L a day");
+  if (levers.drag_out != written.drag_out) add("drag-out " + sheets::figure(levers.drag_out, 3) + " times");
+  if (levers.load != written.load) add("work " + sheets::figure(levers.load, 3) + " times");
+  return text;
 }
 
 }  // namespace
@@ -35,6 +50,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
     shop_ = std::make_shared<const work::Shop>(*std::move(shop));
     shop_file_ = question.tank_file;
   }
+  told.shop = shop_;
   const work::Shop& shop = *shop_;
   const auto start = work::starting_state(question.session, shop, question.readings_file.string());
   if (!start) return fail(start.problems());
@@ -50,30 +66,31 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
   told.currency = shop.tank.currency;
   told.notes = forecast->notes();
   for (const Problem& problem : run->ended) told.notes.push_back(problem.text());
-  const auto show = [&](const forecast::Bands* bands) {
+  std::optional<std::vector<double>> settled;
+  std::string why_unsettled;
+  const auto show = [&](const forecast::Bands* bands, bool complete) {
     told.limits = bands ? bands->limits : forecast->limits(*run);
     told.summary = forecast->summary(*run, forecast->limits(*run));
     told.dates.clear();
     for (const auto& limit : told.limits) told.dates.push_back(sheets::iso_date(policy, limit.day));
-    sheets::ForecastPage page{shop.tank, *forecast,   *run,
-                              bands,     told.limits, std::nullopt,
-                              "",        told.bleeds, question.policy_file.filename().string(),
-                              told.from, {},          {}};
+    const sheets::ForecastPage page{
+        shop.tank,     *forecast,   *run,
+        bands,         told.limits, settled,
+        why_unsettled, told.bleeds, question.policy_file.filename().string() + changes(*read, told.levers),
+        told.from,     {},          {}};
     told.page = sheets::forecast_charts(page);
+    if (complete) told.sheet = sheets::forecast_page(page);
     told.sampled = bands != nullptr;
     give(told);
   };
-  show(nullptr);
-  for (const auto& limit : told.limits) {
-    if (stop.stop_requested()) return;
-    if (limit.quantity.empty() || !limit.from_below || limit.share == 0 ||
-        limit.cause != forecast::Cause::by_product)
-      continue;
-    const auto bleed = forecast->bleed_to_hold(start->state, limit.quantity, limit.g_per_L);
-    if (bleed && *bleed)
-      told.bleeds.push_back({shop.type().quantity(limit.quantity)->label, **bleed, std::nullopt, {}, {}});
-  }
-  give(told);
+  show(nullptr, false);
+  told.bleeds =
+      work::bleeds_to_hold(*forecast, start->state, told.limits, [&] { return stop.stop_requested(); });
+  if (stop.stop_requested()) return;
+  const auto steady = forecast->steady_state(start->state);
+  if (steady) settled = *steady;
+  why_unsettled = steady ? "nothing leaves the tank" : steady.problems().front().what;
+  show(nullptr, true);
   progress_ = 0;
   forecast::Forecast::Sampling sampling;
   sampling.samples = question.samples;
@@ -82,7 +99,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
     progress_ = share;
     return !stop.stop_requested();
   });
-  if (bands) show(&*bands);
+  if (bands) show(&*bands, true);
 }
 
 }  // namespace bathwright::desktop

@@ -31,8 +31,9 @@ struct ForecastQuestion {
 struct Forecasted {
   std::filesystem::path tank_file, policy_file;
   Problems problems;
-  Levers levers;      ///< as computed with
-  charts::Page page;  ///< to show and to save
+  std::shared_ptr<const work::Shop> shop;  ///< where there are no problems
+  Levers levers;                           ///< as computed with
+  charts::Page page;                       ///< to show and to save
   std::vector<forecast::LimitMet> limits;
   std::vector<std::string> dates;  ///< of the limits, where the policy has a calendar date
   std::vector<sheets::BleedToHold> bleeds;
@@ -40,6 +41,7 @@ struct Forecasted {
   std::string currency, from;
   std::vector<std::string> notes;
   bool sampled = false;
+  std::optional<sheets::Page> sheet;  ///< to print, once all but the samples is worked out
 };
 
 class ForecastWork {

@@ -43,6 +43,11 @@ std::string with_unit(const std::string& text, const std::string& unit) {
   return bare ? text + " " + unit : text;
 }
 
+std::string value_unit(const HeadUnits& units, const std::string& quantity) {
+  const auto unit = units.value.find(quantity);
+  return unit == units.value.end() ? "g/L" : unit->second;
+}
+
 void set_usual(DraftRow& row) {
   const analysis::Method* method =
       row.is_value() ? nullptr : analysis::method(row.methods[static_cast<std::size_t>(row.method)]);
@@ -127,7 +132,7 @@ std::string readings_text(const Draft& draft, const HeadUnits& units, std::vecto
     add(row.is_value() ? "[[found]]" : "[[titration]]");
     add("quantity = " + in_quotes(row.quantity));
     if (row.is_value()) {
-      add("value = " + in_quotes(with_unit(row.value, units.value)));
+      add("value = " + in_quotes(with_unit(row.value, value_unit(units, row.quantity))));
     } else {
       add("method = " + in_quotes(row.methods[static_cast<std::size_t>(row.method)]));
       for (const auto& [key, value, unit] : {std::tuple{"sample", &row.sample, "mL"},
@@ -137,6 +142,13 @@ std::string readings_text(const Draft& draft, const HeadUnits& units, std::vecto
     }
   }
   return text;
+}
+
+Draft with_units(Draft draft, const HeadUnits& units) {
+  draft.volume = with_unit(draft.volume, units.volume);
+  draft.temperature = with_unit(draft.temperature, units.temperature);
+  for (DraftRow& row : draft.rows) row.value = with_unit(row.value, value_unit(units, row.quantity));
+  return draft;
 }
 
 void DraftHistory::begin_step(int row, Field field) {
@@ -183,6 +195,12 @@ void DraftHistory::redo() {
   past_.push_back(std::exchange(now_, std::move(future_.back())));
   future_.pop_back();
   last_row_ = -2;
+}
+
+void DraftHistory::write_out(const HeadUnits& units) {
+  now_ = with_units(std::move(now_), units);
+  for (std::vector<Draft>* drafts : {&past_, &future_})
+    for (Draft& draft : *drafts) draft = with_units(std::move(draft), units);
 }
 
 Outcome keep_draft(const std::filesystem::path& file, const Draft& draft) {

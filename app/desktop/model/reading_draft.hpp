@@ -6,6 +6,7 @@
 #include <bathwright/analysis/method.hpp>
 #include <bathwright/bath/tank.hpp>
 #include <filesystem>
+#include <map>
 
 #include "../panels/intent.hpp"
 
@@ -36,13 +37,18 @@ struct Draft {
 
 /// What a bare number in a field means; burettes and samples are in mL, titrants in mol/L.
 struct HeadUnits {
-  std::string volume = "L", temperature = "degC", value = "g/L";
+  std::string volume = "L", temperature = "degC";
+  std::map<std::string, std::string> value{};  ///< of a concentration, by quantity; else g/L
 };
 
 /// The text of a readings file: what is typed, empty rows left out. `line_of_row` gets the line each row's
 /// block begins on (0: left out), to bring a message back to its row.
 [[nodiscard]] std::string readings_text(const Draft& draft, const HeadUnits& units,
                                         std::vector<int>& line_of_row);
+
+/// The draft with the unit of every bare number written out: what is kept means the same whatever is shown
+/// later.
+[[nodiscard]] Draft with_units(Draft draft, const HeadUnits& units);
 
 /// A draft with its past. Typing on in one field is one step.
 class DraftHistory {
@@ -60,6 +66,8 @@ class DraftHistory {
   void start_again(Draft blank);
   void undo();
   void redo();
+  /// Bare numbers of now and before keep the meaning they had when they were typed.
+  void write_out(const HeadUnits& units);
 
  private:
   void begin_step(int row, Field field);

@@ -23,6 +23,11 @@ Settings kept_settings(const std::filesystem::path& file) {
   settings.concentration = text("concentration", settings.concentration);
   settings.volume = text("volume", settings.volume);
   settings.temperature = text("temperature", settings.temperature);
+  settings.print_command = text("print_command", settings.print_command);
+  settings.mass = text("mass", settings.mass);
+  settings.liquid = text("liquid", settings.liquid);
+  settings.density = text("density", settings.density);
+  if (settings.concentration == "oz/gal") settings.concentration = "oz/US gal";  // as it was called before
   if (kept.contains("scale") && kept["scale"].is_number())
     settings.scale = std::clamp(kept["scale"].get<float>(), 0.0F, 2.0F);
   settings.dark = kept.contains("dark") && kept["dark"] == true;
@@ -35,9 +40,13 @@ Outcome keep(const std::filesystem::path& file, const Settings& settings) {
                      {"scale", settings.scale},
                      {"dark", settings.dark},
                      {"letter", settings.letter},
+                     {"print_command", settings.print_command},
                      {"concentration", settings.concentration},
                      {"volume", settings.volume},
-                     {"temperature", settings.temperature}};
+                     {"temperature", settings.temperature},
+                     {"mass", settings.mass},
+                     {"liquid", settings.liquid},
+                     {"density", settings.density}};
   return work::write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 

@@ -11,8 +11,10 @@ struct Settings {
   std::filesystem::path shop;  ///< empty: the first start
   float scale = 0;             ///< of letters and spaces, 1 to 2; 0: as the display asks
   bool dark = false;
+  std::string print_command = "lp";
   bool letter = false;  ///< slips and hand-overs are printed on Letter, else on A4
-  std::string concentration = "g/L", volume = "L", temperature = "°C";
+  std::string concentration = "g/L", volume = "L", temperature = "°C";  ///< the choices of units.hpp
+  std::string mass = "kg", liquid = "L", density = "kg/L";
 };
 
 /// As kept by the last run; the defaults where nothing was kept or it cannot be read.

@@ -1,5 +1,5 @@
-// One thing at a time that is signed and logged, on a thread of its own: proving a PIN takes a tenth of a
-// second on purpose. Nothing that was begun is dropped.
+// One thing at a time that is signed and logged, or printed, on a thread of its own: proving a PIN takes a
+// tenth of a second on purpose. Nothing that was begun is dropped.
 #pragma once
 
 #include <bathwright/base/result.hpp>

@@ -2,8 +2,8 @@
 #pragma once
 
 #include <bathwright/bath/tank.hpp>
+#include <bathwright/charts/chart.hpp>
 
-#include "../panels/view.hpp"
 #include "work/session.hpp"
 
 namespace bathwright::desktop {
@@ -14,8 +14,10 @@ struct TrendsQuestion {
 };
 
 struct TrendsAnswer {
-  std::string tank;  ///< its name
-  TrendsView view;
+  std::string tank;   ///< its name
+  std::string empty;  ///< why there is nothing to show
+  std::vector<charts::Chart> charts;
+  std::vector<std::string> findings;
 };
 
 [[nodiscard]] TrendsAnswer read_trends(const TrendsQuestion& question);

@@ -87,11 +87,56 @@ std::string small_figure(double value) {
   return value > 0 && value < 1e-3 ? fmt::format("{:.2e}", value) : figure(value, 3);
 }
 
-std::string room_words(double kg, double log10_room, bool covered) {
+std::string room_words(double kg, double log10_room, bool covered, const Units& units) {
   if (!covered) return "";
-  if (std::isfinite(kg)) return units::significant(kg, 2) + " kg";
+  if (std::isfinite(kg)) return units.mass(kg, 2);
   return units::significant(100 * std::pow(10, -log10_room), 2) + " %";
 }
+
+/// Decimals that show three figures of a level, fewer where it is large.
+int decimals_of(double value) {
+  constexpr double coarse = 1000, one_decimal = 10;
+  value = std::abs(value);
+  if (value >= coarse) return 0;
+  if (value >= one_decimal) return 1;
+  return value >= 1 || value == 0 ? 2 : std::min(6, 2 - static_cast<int>(std::floor(std::log10(value))));
+}
+
+/// A judged figure in the unit it is shown in: a level of a quantity, or a pH.
+LevelUnit unit_of(const sheets::Judged& judged, const bath::BathType& type, const bath::TankView* in,
+                  const Units& units) {
+  const bath::Quantity* quantity = judged.unit == "g/L" ? type.quantity(judged.aim->quantity) : nullptr;
+  return quantity ? units.level(*quantity, in) : LevelUnit{judged.unit, 1};
+}
+
+/// A chart of levels, volumes or masses in the units that are shown.
+void convert(charts::Chart& chart, const bath::BathType* type, const Units& units) {
+  LevelUnit unit{chart.unit, 1};
+  if (const bath::Quantity* quantity = type ? type->quantity(chart.level_of) : nullptr)
+    unit = units.level(*quantity, nullptr);
+  if (chart.unit == "L") unit = {units.volume_symbol(), units.volume_value(1)};
+  if (unit.symbol == chart.unit) return;
+  const double times = unit.per_g_per_L;
+  const auto scale = [&](std::vector<double>& values) {
+    for (double& value : values) value *= times;
+  };
+  chart.unit = unit.symbol;
+  chart.least_height *= times;
+  for (auto& line : chart.lines) scale(line.y);
+  for (auto& band : chart.bands) scale(band.low), scale(band.high);
+  for (auto& found : chart.found) found.y *= times, found.u *= times;
+  for (auto& limit : chart.limits) {
+    limit.at *= times;
+    limit.name = "limit " + fmt::format("{:.4g}", limit.at);
+  }
+  if (chart.window)
+    chart.window = {times * chart.window->low, times * chart.window->aim, times * chart.window->high};
+}
+
+/// Why days that are not today are in g/L, where they are.
+constexpr const char* needs_density =
+    "Levels of other days are in g/L: the unit chosen in the settings needs the density of each day, which is not "
+    "kept.";
 
 }  // namespace
 
@@ -119,6 +164,10 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
     shown.burette = row.burette;
     shown.value = row.value;
     shown.is_value = row.is_value();
+    shown.value_unit = "g/L";
+    if (const bath::Quantity* quantity =
+            worked && worked->shop ? worked->shop->type().quantity(row.quantity) : nullptr)
+      shown.value_unit = units.typed(*quantity);
     view.rows.push_back(std::move(shown));
   }
   if (!worked) return view;
@@ -126,10 +175,13 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
     for (std::size_t i = 0; i < draft.rows.size(); ++i) {
       if (draft.rows[i].is_empty()) continue;
       for (const auto& level : worked->analysed->analysis.results)
-        if (level.quantity == draft.rows[i].quantity)
-          view.rows[i].result = figure(units.level(level.value.v)) + " ± " +
-                                units::significant(units.level(level.standard_uncertainty.v), 2) + " " +
-                                units.concentration();
+        if (const bath::Quantity* quantity = worked->shop->type().quantity(level.quantity);
+            quantity && level.quantity == draft.rows[i].quantity) {
+          const LevelUnit unit = units.level(*quantity, worked->now ? &*worked->now : nullptr);
+          view.rows[i].result = figure(unit.of(level.value.v)) + " ± " +
+                                units::significant(unit.of(level.standard_uncertainty.v), 2) + " " +
+                                unit.symbol;
+        }
     }
   for (const Problem& problem : worked->problems) {
     const int row = row_at(line_of(problem), line_of_row);
@@ -158,23 +210,22 @@ StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units
       plan ? sheets::judge(tank, type, plan->final_view.quantity_g_per_L, plan->final_view.pH) : now;
   for (std::size_t i = 0; i < now.size(); ++i) {
     const sheets::Judged& judged = now[i];
-    const bool is_level = judged.unit == "g/L";
-    const auto shown = [&](double value) { return is_level ? units.level(value) : value; };
+    const LevelUnit unit = unit_of(judged, type, &*worked.now, units);
     const int decimals =
-        is_level || judged.unit.empty() ? (judged.unit.empty() || shown(judged.found) < 10 ? 2 : 1) : 1;
+        judged.unit.empty() ? 2 : decimals_of(unit.of(std::max(judged.found, judged.aim->aim)));
     ComponentRow row;
     row.name = judged.label;
-    row.unit = is_level ? units.concentration() : judged.unit;
+    row.unit = unit.symbol;
     row.strip = {judged.aim->low, judged.aim->aim, judged.aim->high, judged.found, std::nullopt, 0};
     if (plan && !plan->additions.empty()) {
       row.strip.predicted = then[i].found;
-      row.predicted = fixed(shown(then[i].found), decimals);
+      row.predicted = fixed(unit_of(then[i], type, &plan->final_view, units).of(then[i].found), decimals);
     }
     if (worked.analysed)
       for (const auto& level : worked.analysed->analysis.reconciled)
         if (level.quantity == judged.aim->quantity) row.strip.u = level.standard_uncertainty.v;
-    row.found = fixed(shown(judged.found), decimals);
-    row.aim = fixed(shown(judged.aim->aim), decimals);
+    row.found = fixed(unit.of(judged.found), decimals);
+    row.aim = fixed(unit.of(judged.aim->aim), decimals);
     row.state = state_of(judged.standing);
     row.word = std::string(sheets::words(judged.standing));
     view.rows.push_back(std::move(row));
@@ -213,28 +264,32 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     return addition == plan->additions.end() ? std::string() : money(addition->cost);
   };
   if (edited.empty())
-    for (const dosing::Addition& addition : planned.additions)
-      view.additions.push_back(
-          {addition.name, addition.unit, addition.amount, 2 * addition.amount, money(addition.cost)});
+    for (const dosing::Addition& addition : planned.additions) {
+      const AmountUnit unit = units.amount_unit(addition.unit);
+      const double amount = addition.amount * unit.per_one;
+      view.additions.push_back({addition.name, unit.symbol, amount, 2 * amount, money(addition.cost)});
+    }
   for (const auto& [id, kg] : edited) {
     const matter::StockChemical* stock = stock_of(tank, id);
     const double amount = stock->liquid ? kg / stock->kg_per_L : kg, planned_one = planned_amount(id);
     constexpr double usual = 25;  // a bag
-    view.additions.push_back({stock->name, stock->liquid ? "L" : "kg", amount,
-                              planned_one > 0 ? 2 * planned_one : std::max(usual, amount), cost_of(id)});
+    const AmountUnit unit = units.amount_unit(stock->liquid ? "L" : "kg");
+    view.additions.push_back({stock->name, unit.symbol, amount * unit.per_one,
+                              unit.per_one * (planned_one > 0 ? 2 * planned_one : std::max(usual, amount)),
+                              cost_of(id)});
   }
   std::set<std::string> told;  // what to look at is said once, at the step it begins with
   for (const dosing::Step& step : plan->steps) {
     StepRow row;
     row.number = std::to_string(step.number);
-    row.what = sheets::measured(step.amount, step.unit) + " " + step.name;
+    row.what = units.amount(step.amount, step.unit) + " " + step.name;
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
-    for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH))
-      row.then += judged.label + " " +
-                  fixed(judged.unit == "g/L" ? units.level(judged.found) : judged.found,
-                        judged.unit.empty() ? 2 : 1) +
-                  ", ";
+    for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH)) {
+      const LevelUnit unit = unit_of(judged, type, &step.predicted, units);
+      const double level = unit.of(judged.found);
+      row.then += judged.label + " " + fixed(level, judged.unit.empty() ? 2 : decimals_of(level)) + ", ";
+    }
     row.then += units.volume(step.predicted.volume_L);
     if (step.wait_h > 0) row.wait = "wait " + sheets::waiting(step.wait_h) + ", stirred";
     for (const dosing::Check& check : step.checks) {
@@ -275,7 +330,7 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
   view.figures = {{"pH", fixed(now.pH, 2)},
                   {"ionic strength", figure(now.ionic_strength, 3) + " mol/kg"},
                   {"water activity", fixed(now.water_activity, 3)},
-                  {"density", fixed(now.density_kg_per_L, 3) + " kg/L"}};
+                  {"density", units.density(now.density_kg_per_L)}};
   constexpr std::size_t most_ions = 10;
   for (const bath::SpeciesView& species : now.species) {
     if (view.ions.size() == most_ions) break;
@@ -287,8 +342,8 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
     SolidRow row;
     row.id = room.solid;
     row.name = pretty(room.solid);
-    row.working = room_words(room.working_kg, room.working_log10, room.covers_working);
-    row.idle = room_words(room.idle_kg, room.idle_log10, room.covers_idle);
+    row.working = room_words(room.working_kg, room.working_log10, room.covers_working, units);
+    row.idle = room_words(room.idle_kg, room.idle_log10, room.covers_idle, units);
     row.working_share = room.covers_working ? std::pow(10, -room.working_log10) : 0;
     row.idle_share = room.covers_idle ? std::pow(10, -room.idle_log10) : 0;
     row.forms = row.working_share >= 1 || row.idle_share >= 1;
@@ -301,10 +356,11 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
       charts::Chart one;
       one.title = std::move(title);
       one.unit = std::move(unit);
-      one.x_title = "kg added";
+      const AmountUnit mass = units.amount_unit("kg");
+      one.x_title = mass.symbol + " added";
       charts::Series line{"", charts::Meaning::predicted, {}, {}};
       for (const PathPoint& point : worked.path)
-        line.x.push_back(point.kg), line.y.push_back(value(point.view));
+        line.x.push_back(point.kg * mass.per_one), line.y.push_back(value(point.view));
       one.lines.push_back(std::move(line));
       return one;
     };
@@ -359,8 +415,8 @@ LineView line_view(const ShopFolder& shop, const LogNow& log, int selected) {
   return view;
 }
 
-SlipView slip_view(const std::optional<work::OpenSlip>& slip,
-                   const std::optional<shifts::Calendar>& calendar) {
+SlipView slip_view(const std::optional<work::OpenSlip>& slip, const std::optional<shifts::Calendar>& calendar,
+                   const Units& units) {
   SlipView view;
   if (!slip) return view;
   view.number = slip->seq;
@@ -372,8 +428,9 @@ SlipView slip_view(const std::optional<work::OpenSlip>& slip,
   for (const work::SlipStep& step : slip->steps) {
     SlipView::Row row;
     row.step = step.number;
-    row.what =
-        std::to_string(step.number) + "  " + sheets::measured(step.amount, step.unit) + " " + step.name;
+    row.what = std::to_string(step.number) + "  " + units.amount(step.amount, step.unit) + " " + step.name;
+    if (!units.as_on_paper(step.unit))
+      row.what += " (" + sheets::measured(step.amount, step.unit) + " on paper)";
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
     if (step.wait_h > 0) row.wait = "then wait " + sheets::waiting(step.wait_h) + ", stirred";
@@ -494,6 +551,11 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
     const auto& limit = told.limits[i];
     LimitRow row;
     row.name = pretty_words(limit.name);
+    if (const bath::Quantity* quantity = told.shop->type().quantity(limit.quantity)) {
+      const LevelUnit unit = units.level(*quantity, nullptr);
+      row.name = quantity->label + (limit.from_below ? " above " : " below ") +
+                 figure(unit.of(limit.g_per_L)) + " " + unit.symbol;
+    }
     row.why = std::string(forecast::name(limit.cause));
     if (limit.day) {
       row.state = charts::State::act;
@@ -516,17 +578,28 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   view.figures = {{"chemicals and water a day", money(told.summary.cost)},
                   {"waste a day", units.volume(told.summary.waste_L) + ", " + money(told.summary.waste_cost)},
                   {"water a day", units.volume(told.summary.top_up_L)},
-                  {"metal lost a day", figure(told.summary.metal_lost_kg, 3) + " kg"}};
+                  {"metal lost a day", units.mass(told.summary.metal_lost_kg, 3)}};
   double most_bleed = 0;
   for (const auto& bleed : told.bleeds) {
-    view.figures.emplace_back("bleed that holds " + bleed.limit,
-                              figure(*bleed.litres_per_day, 3) + " L more a day");
+    if (!bleed.litres_per_day) continue;
+    view.figures.emplace_back("bleed that holds " + told.shop->type().quantity(bleed.quantity)->label,
+                              units.volume(*bleed.litres_per_day) + " more a day");
     most_bleed = std::max(most_bleed, levers.bleed_L_per_day + *bleed.litres_per_day);
   }
   constexpr double usual_bleed = 200;
   view.levers[0].high = std::max({usual_bleed, 2 * levers.bleed_L_per_day, 1.5 * most_bleed});
   view.charts = told.page.charts;
+  for (charts::Chart& chart : view.charts) convert(chart, &told.shop->type(), units);
+  view.may_print = told.sheet.has_value();
   view.notes = told.notes;
+  if (units.only_for_now()) view.notes.insert(view.notes.begin(), needs_density);
+  return view;
+}
+
+TrendsView trends_view(const TrendsAnswer& answer, const bath::BathType* type, const Units& units) {
+  TrendsView view{answer.empty, answer.charts, answer.findings, {}};
+  for (charts::Chart& chart : view.charts) convert(chart, type, units);
+  if (units.only_for_now() && !view.charts.empty()) view.notes.emplace_back(needs_density);
   return view;
 }
 

@@ -7,6 +7,7 @@
 #include "reading_draft.hpp"
 #include "shop_folder.hpp"
 #include "tank_work.hpp"
+#include "trends_work.hpp"
 #include "units.hpp"
 
 namespace bathwright::desktop {
@@ -19,11 +20,14 @@ namespace bathwright::desktop {
                                            const std::vector<std::pair<std::string, double>>& edited,
                                            const Units& units);
 [[nodiscard]] SlipView slip_view(const std::optional<work::OpenSlip>& slip,
-                                 const std::optional<shifts::Calendar>& calendar);
+                                 const std::optional<shifts::Calendar>& calendar, const Units& units);
 [[nodiscard]] ChemistryView chemistry_view(const Worked& worked, const Units& units);
 [[nodiscard]] ShiftView shift_view(const LogNow& log, shifts::UtcTime now);
 [[nodiscard]] LogView log_view(const LogNow& log);
 [[nodiscard]] ForecastView forecast_view(const Forecasted& told, const Units& units);
+/// `type`: of the tank, where it is known already; else levels are in g/L.
+[[nodiscard]] TrendsView trends_view(const TrendsAnswer& answer, const bath::BathType* type,
+                                     const Units& units);
 
 /// The plan that is shown: the edited one, else the chosen one; nullptr where there is none.
 [[nodiscard]] const dosing::Plan* shown_plan(const Worked& worked, int plan);

@@ -1,3 +1,4 @@
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
@@ -92,6 +93,7 @@ void draw_additions(const AdditionsView& view, PanelState& state, const Look& lo
   if (button(look, "Back to the plan", view.edited)) out.emplace_back(BackToPlan{});
   draw_amounts(view, look, out);
   draw_add(view, state, look, out);
+  copies(look, "the additions", [&] { return figures_of(view); });
   if (!view.chance.empty()) quiet(look, view.chance);
   for (const std::string& unmet : view.unmet) standing(look, static_cast<int>(charts::State::act), unmet);
   for (const std::string& conflict : view.conflicts)

@@ -1,3 +1,8 @@
+#include <imgui.h>
+// after imgui.h, which it needs
+#include <imgui_stdlib.h>
+
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
@@ -60,7 +65,8 @@ void draw_solids(const ChemistryView& view, const Look& look, Intents& out) {
 
 }  // namespace
 
-void draw_chemistry(const ChemistryView& view, const SourceView& source, const Look& look, Intents& out) {
+void draw_chemistry(const ChemistryView& view, const SourceView& source, PanelState& state, const Look& look,
+                    Intents& out) {
   heading(look, "The chemistry of it");
   for (const auto& [name, value] : view.figures) {
     ImGui::TextUnformatted(name.c_str());
@@ -77,6 +83,13 @@ void draw_chemistry(const ChemistryView& view, const SourceView& source, const L
       const float width = ImGui::GetContentRegionAvail().x / look.scale;
       draw_plot(chart, width, 190, look);
     }
+    ImGui::SetNextItemWidth(look.px(150));
+    ImGui::InputTextWithHint("##file", "path.pdf, .svg or .png", &state.file);
+    note_place(look, "path file");
+    ImGui::SameLine();
+    if (button(look, "Save the charts", !state.file.empty()))
+      out.emplace_back(SaveCharts{Charts::path, state.file});
+    copies(look, "the path", [&] { return figures_of(view.path); });
   }
   if (!view.doubts.empty()) {
     heading(look, "Doubts");

@@ -30,14 +30,12 @@ void draw_pages(const DeskView& view, PanelState& state, const Look& look, Inten
 }
 
 void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
-  ImGui::PushFont(look.fonts.heading);
-  ImGui::TextUnformatted(view.tank_title.c_str());
-  ImGui::PopFont();
+  title(look, view.tank_title);
   if (!view.tank_sub.empty()) quiet(look, view.tank_sub);
   draw_readings(view.readings, state, look, out);
   draw_state(view.state, look);
   if (view.slip.number != 0) {
-    draw_slip(view.slip, view.sign, state, look, out);
+    draw_slip(view.slip, view.sign, view.printed, state, look, out);
   } else {
     state.slip = 0;
     draw_additions(view.additions, state, look, out);
@@ -46,19 +44,20 @@ void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intent
 }
 
 void draw_page(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  if (view.printed.open) return draw_printed(view.printed, look, out);
   switch (view.page) {
     case PageName::shift:
       return draw_tank(view, state, look, out);
     case PageName::forecast:
-      return draw_forecast(view.forecast, view.tank_title, state, look, out);
+      return draw_forecast(view.forecast, view.printed, view.tank_title, state, look, out);
     case PageName::trends:
       return draw_trends(view.trends, view.tank_title, state, look, out);
     case PageName::log:
       return draw_log(view.log, state, look, out);
     case PageName::hand_over:
-      return draw_hand_over(view.hand_over, view.sign, state, look, out);
+      return draw_hand_over(view.hand_over, view.sign, view.printed, state, look, out);
     case PageName::bath_types:
-      return draw_bath_types(view.bath_types, look);
+      return draw_bath_types(view.bath_types, state, look, out);
     case PageName::people:
       return draw_people(view, state, look, out);
     case PageName::settings:
@@ -107,7 +106,7 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     if (with_chemistry) {
       ImGui::SameLine(0, 0);
       panel("chemistry", {right, body}, Part::chemistry,
-            [&] { draw_chemistry(view.chemistry, view.source, look, out); });
+            [&] { draw_chemistry(view.chemistry, view.source, state, look, out); });
     }
     panel("shift", {all.x, look.px(strip)}, {}, [&] { draw_shift(view.shift, look, out); });
     ImGui::SetCursorPosX(look.px(12));

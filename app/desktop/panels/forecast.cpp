@@ -2,6 +2,7 @@
 // after imgui.h, which it needs
 #include <imgui_stdlib.h>
 
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
@@ -58,11 +59,9 @@ void draw_charts(const ForecastView& view, const Look& look) {
 
 }  // namespace
 
-void draw_forecast(const ForecastView& view, const std::string& tank, PanelState& state, const Look& look,
-                   Intents& out) {
-  ImGui::PushFont(look.fonts.heading);
-  ImGui::TextUnformatted((tank + ": what builds up").c_str());
-  ImGui::PopFont();
+void draw_forecast(const ForecastView& view, const PrintedView& printed, const std::string& tank,
+                   PanelState& state, const Look& look, Intents& out) {
+  title(look, tank + ": what builds up");
   if (!view.empty.empty()) {
     said(look, look.palette.ink, view.empty);
     return;
@@ -91,6 +90,7 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
   for (const std::string& fault : view.faults) standing(look, static_cast<int>(charts::State::stop), fault);
   heading(look, "Limits");
   draw_limits(view, look);
+  if (!view.limits.empty()) copies(look, "the limits", [&] { return figures_of(view); });
   heading(look, "What it costs");
   for (const auto& [name, value] : view.figures) {
     quiet(look, name);
@@ -104,6 +104,10 @@ void draw_forecast(const ForecastView& view, const std::string& tank, PanelState
   ImGui::SameLine();
   const bool may_save = !state.file.empty() && !view.charts.empty();
   if (button(look, "Save the charts", may_save)) out.emplace_back(SaveCharts{Charts::forecast, state.file});
+  if (button(look, "Print the forecast", view.may_print)) out.emplace_back(PrintForecast{});
+  ImGui::SameLine();
+  if (!view.charts.empty()) copies(look, "the charts", [&] { return figures_of(view.charts); });
+  draw_show_printed(printed, look, out);
   for (const std::string& note : view.notes) quiet(look, note);
   ImGui::EndChild();
   ImGui::SameLine(0, look.px(16));

@@ -73,6 +73,10 @@ struct SetShifts {
   std::string pattern, zone;
   Names names;
 };
+struct RetirePerson {
+  std::string name;
+  Names names;
+};
 struct AdmitPerson {
   std::string name, role, pin;
   Names names;
@@ -88,6 +92,17 @@ struct MoveLever {
 };
 struct StopSampling {};
 
+// What may run.
+struct ExaminePlugin {
+  std::string file;  ///< empty: what was looked at is left
+};
+struct AllowPlugin {
+  std::string sha256;  ///< of the plugin that was looked at
+};
+struct WithdrawPlugin {
+  std::string sha256;
+};
+
 // Anything else.
 struct FilterLog {
   std::string text;
@@ -98,10 +113,17 @@ struct ShowEntry {
 struct AskSource {
   std::string species;
 };
-enum class Charts : std::uint8_t { forecast, trends };
+enum class Charts : std::uint8_t { forecast, trends, path };
 struct SaveCharts {
   Charts charts;
   std::string file;
+};
+struct PrintForecast {};
+struct ShowPrinted {};  ///< the sheet that was printed last
+struct ClosePrinted {};
+struct PrintSheet {};  ///< the one that is shown, on paper
+struct SetPrintCommand {
+  std::string command;
 };
 struct SetPaper {
   bool letter;  ///< else A4
@@ -114,14 +136,16 @@ struct SetLook {
   float scale;
   bool dark;
 };
-struct SetUnits {
-  int concentration, volume, temperature;  ///< in the order of the settings page
+struct SetUnit {
+  int which, chosen;  ///< in the order of the settings page
 };
 
-using Intent = std::variant<GoTo, OpenTank, TypeReading, ChooseMethod, UndoTyping, RedoTyping, NewSample,
-                            ChoosePlan, DragAmount, AddChemical, BackToPlan, LogAnalysis, IssueSlip, StepDone,
-                            ApproveSlip, CloseSlip, HandOver, SetShifts, AdmitPerson, ChoosePolicy, MoveLever,
-                            StopSampling, FilterLog, ShowEntry, AskSource, SaveCharts, SetPaper, OpenFolder,
-                            OpenDemonstration, SetLook, SetUnits>;
+using Intent =
+    std::variant<GoTo, OpenTank, TypeReading, ChooseMethod, UndoTyping, RedoTyping, NewSample, ChoosePlan,
+                 DragAmount, AddChemical, BackToPlan, LogAnalysis, IssueSlip, StepDone, ApproveSlip,
+                 CloseSlip, HandOver, SetShifts, AdmitPerson, RetirePerson, ExaminePlugin, AllowPlugin,
+                 WithdrawPlugin, ChoosePolicy, MoveLever, StopSampling, FilterLog, ShowEntry, AskSource,
+                 SaveCharts, PrintForecast, ShowPrinted, ClosePrinted, PrintSheet, SetPrintCommand, SetPaper,
+                 OpenFolder, OpenDemonstration, SetLook, SetUnit>;
 
 }  // namespace bathwright::desktop

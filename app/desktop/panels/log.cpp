@@ -2,18 +2,11 @@
 // after imgui.h, which it needs
 #include <imgui_stdlib.h>
 
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
 namespace {
-
-std::string rows_as_text(const LogView& view) {
-  std::string text = "entry\ttime\tkind\ttank\tby\twhat\n";
-  for (const LogRow& row : view.rows)
-    text +=
-        row.seq + '\t' + row.at + '\t' + row.kind + '\t' + row.tank + '\t' + row.by + '\t' + row.words + '\n';
-  return text;
-}
 
 void draw_rows(const LogView& view, const Look& look, Intents& out) {
   constexpr ImGuiTableFlags flags =
@@ -59,7 +52,7 @@ void draw_log(const LogView& view, PanelState& state, const Look& look, Intents&
     out.emplace_back(FilterLog{state.filter});
   note_place(look, "filter");
   ImGui::SameLine();
-  if (button(look, "Copy the rows")) ImGui::SetClipboardText(rows_as_text(view).c_str());
+  if (button(look, "Copy the rows")) ImGui::SetClipboardText(figures_of(view).c_str());
   if (view.rows.empty()) {
     quiet(look, view.filter.empty()
                     ? "Nothing is logged yet: the first analysis or slip that is signed stands here."

@@ -24,6 +24,12 @@ void said(const Look& look, charts::Colour c, const std::string& words) {
   ImGui::PopStyleColor();
 }
 
+void title(const Look& look, const std::string& words) {
+  ImGui::PushFont(look.fonts.heading);
+  ImGui::TextUnformatted(words.c_str());
+  ImGui::PopFont();
+}
+
 void quiet(const Look& look, const std::string& words) {
   ImGui::PushFont(look.fonts.caption);
   said(look, look.palette.quiet, words);
@@ -92,6 +98,14 @@ bool button(const Look& look, const char* label, bool ready) {
   ImGui::EndDisabled();
   note_place(look, label);
   return pressed && ready;  // a disabled button can still be fired from the keyboard
+}
+
+void copies(const Look& look, const char* what, const std::function<std::string()>& text) {
+  ImGui::PushID(what);
+  if (ImGui::SmallButton("Copy the figures")) ImGui::SetClipboardText(text().c_str());
+  note_place(look, std::string("copy ") + what);
+  if (ImGui::IsItemHovered()) ImGui::SetTooltip("as rows for a spreadsheet");
+  ImGui::PopID();
 }
 
 bool main_button(const Look& look, const char* label, bool ready) {

@@ -4,6 +4,7 @@
 #include <imgui.h>
 
 #include <bathwright/charts/palette.hpp>
+#include <functional>
 #include <map>
 #include <string>
 #include <vector>
@@ -19,16 +20,20 @@ using Places = std::map<std::string, ImVec4>;
 /// Under this name the one that has the keyboard's focus and shows it.
 inline constexpr const char* the_focus = "the focus";
 
+class Textures;
+
 struct Look {
   const Fonts& fonts;
   const charts::Palette& palette;
   float scale = 1;
   Places* places = nullptr;
+  Textures* textures = nullptr;  ///< nullptr: sheets are shown as empty paper
 
   [[nodiscard]] float px(float at_100) const { return at_100 * scale; }
 };
 
 void heading(const Look& look, const std::string& words);  ///< of a card, with a rule to the right edge
+void title(const Look& look, const std::string& words);    ///< of a page
 void quiet(const Look& look, const std::string& words);    ///< in quiet ink, wrapped
 void said(const Look& look, charts::Colour colour, const std::string& words);  ///< wrapped
 void bold(const Look& look, const std::string& words);
@@ -51,6 +56,9 @@ void note_window(const Look& look, const std::string& name);
 
 /// A button; false while it is not ready, whatever fires it.
 bool button(const Look& look, const char* label, bool ready = true);
+
+/// A small button that puts a text on the clipboard.
+void copies(const Look& look, const char* what, const std::function<std::string()>& text);
 
 /// The one thing to do next: a button in the accent.
 bool main_button(const Look& look, const char* label, bool ready);

@@ -1,20 +1,15 @@
-// Pages of a few lines each: trends, hand-over, bath types, people, settings, the first start.
+// Pages of a few lines each: trends, hand-over, people, settings, the first start.
 #include <imgui.h>
 // after imgui.h, which it needs
 #include <imgui_stdlib.h>
 
-#include <array>
+#include <algorithm>
 
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
 namespace {
-
-void page_title(const Look& look, const std::string& words) {
-  ImGui::PushFont(look.fonts.heading);
-  ImGui::TextUnformatted(words.c_str());
-  ImGui::PopFont();
-}
 
 void came_of_it(const SignView& sign, const Look& look) {
   if (sign.busy) quiet(look, "signing ...");
@@ -34,30 +29,53 @@ bool choose(const char* label, const std::vector<std::string>& all, int& chosen,
   return changed;
 }
 
+/// Asked once more, for nothing is signed with that name again.
+void draw_leaving(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  const auto person = std::ranges::find(view.people, state.leaving, &PersonRow::name);
+  if (person == view.people.end() || !person->active) return;
+  heading(look, "Has " + state.leaving + " left?");
+  said(look, look.palette.ink,
+       "The entries stay. Nothing is signed with that name any more, unless a chemist admits it again.");
+  draw_signer(view.sign, state.signer, look);
+  const Names names = names_of(view.sign, state.signer);
+  if (button(look, "Retire", !view.sign.busy && !names.pin.empty())) {
+    out.emplace_back(RetirePerson{state.leaving, names});
+    state.leaving.clear();
+  }
+  ImGui::SameLine();
+  if (button(look, "Keep")) state.leaving.clear();
+}
+
 }  // namespace
 
 void draw_trends(const TrendsView& view, const std::string& tank, PanelState& state, const Look& look,
                  Intents& out) {
-  page_title(look, tank + ": trends");
+  title(look, tank + ": trends");
   if (!view.empty.empty()) {
     said(look, look.palette.ink, view.empty);
     return;
   }
   for (const std::string& finding : view.findings)
     standing(look, static_cast<int>(charts::State::act), finding);
+  if (!view.findings.empty()) copies(look, "the findings", [&] { return figures_of(view); });
+  for (const std::string& note : view.notes) quiet(look, note);
   ImGui::SetNextItemWidth(look.px(230));
   ImGui::InputTextWithHint("##file", "trends.pdf, .svg or .png", &state.file);
   ImGui::SameLine();
   if (button(look, "Save the charts", !state.file.empty() && !view.charts.empty()))
     out.emplace_back(SaveCharts{Charts::trends, state.file});
+  if (!view.charts.empty()) {
+    ImGui::SameLine();
+    copies(look, "the charts", [&] { return figures_of(view.charts); });
+  }
   constexpr float height = 220;
   const float width = ImGui::GetContentRegionAvail().x / look.scale;
   for (const charts::Chart& chart : view.charts) draw_plot(chart, width, height, look);
 }
 
-void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& state, const Look& look,
-                    Intents& out) {
-  page_title(look, "Hand over");
+void draw_hand_over(const HandOverView& view, const SignView& sign, const PrintedView& printed,
+                    PanelState& state, const Look& look, Intents& out) {
+  title(look, "Hand over");
   if (!view.shifts_set) {
     said(look, look.palette.ink,
          "No shifts are set in this log. Settings has them; then this page tells the next shift "
@@ -69,47 +87,20 @@ void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& 
   const bool may = !sign.busy && (sign.people.empty() || !names.pin.empty());
   if (main_button(look, "Sign and hand over", may)) out.emplace_back(HandOver{names});
   came_of_it(sign, look);
+  draw_show_printed(printed, look, out);
   ImGui::Separator();
   sheet(look, view.text);
 }
 
-void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look) {
-  page_title(look, "Bath types");
-  quiet(
-      look,
-      "One plugin file each. What is not allowed has not run; bathwright plugins allow FILE allows it after you "
-      "have read it.");
-  if (!ImGui::BeginTable("types", 5, ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH))
-    return;
-  for (const auto& [name, weight] :
-       {std::pair{"bath type", 1.6F}, {"version", 0.6F}, {"state", 0.8F}, {"file", 2.2F}, {"why", 2.6F}})
-    ImGui::TableSetupColumn(name, 0, weight);
-  ImGui::TableHeadersRow();
-  for (const BathTypeRow& row : rows) {
-    ImGui::TableNextRow();
-    ImGui::TableNextColumn();
-    ImGui::TextUnformatted(row.id.c_str());
-    ImGui::TableNextColumn();
-    ImGui::TextUnformatted(row.version.c_str());
-    ImGui::TableNextColumn();
-    standing(look, static_cast<int>(row.mark), row.state);
-    ImGui::TableNextColumn();
-    ImGui::TextUnformatted(row.file.c_str());
-    ImGui::TableNextColumn();
-    said(look, look.palette.stop, row.why);
-  }
-  ImGui::EndTable();
-}
-
 void draw_people(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
-  page_title(look, "People");
+  title(look, "People");
   if (view.people.empty())
     said(look, look.palette.ink,
          "The log has no people: everybody may write, and nothing is signed. To begin, the "
          "chemist signs up first; from then on every entry is signed with a PIN.");
-  else if (ImGui::BeginTable("people", 3,
+  else if (ImGui::BeginTable("people", 4,
                              ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH)) {
-    for (const char* name : {"name", "role", "signs"}) ImGui::TableSetupColumn(name);
+    for (const char* name : {"name", "role", "signs", ""}) ImGui::TableSetupColumn(name);
     ImGui::TableHeadersRow();
     for (const PersonRow& person : view.people) {
       ImGui::TableNextRow();
@@ -117,9 +108,15 @@ void draw_people(const DeskView& view, PanelState& state, const Look& look, Inte
         ImGui::TableNextColumn();
         ImGui::TextUnformatted(text->c_str());
       }
+      ImGui::TableNextColumn();
+      ImGui::PushID(person.name.c_str());
+      if (person.active && ImGui::SmallButton("Left the shop ...")) state.leaving = person.name;
+      note_place(look, "left " + person.name);
+      ImGui::PopID();
     }
     ImGui::EndTable();
   }
+  draw_leaving(view, state, look, out);
   heading(look, view.people.empty() ? "Sign up" : "Admit somebody");
   ImGui::SetNextItemWidth(look.px(200));
   ImGui::InputTextWithHint("##new name", "name", &state.new_name);
@@ -131,7 +128,7 @@ void draw_people(const DeskView& view, PanelState& state, const Look& look, Inte
   ImGui::SetNextItemWidth(look.px(90));
   ImGui::InputTextWithHint("##new pin", "new PIN", &state.new_pin, ImGuiInputTextFlags_Password);
   note_place(look, "new PIN");
-  if (!view.people.empty()) draw_signer(view.sign, state.signer, look);
+  if (!view.people.empty() && state.leaving.empty()) draw_signer(view.sign, state.signer, look);
   const Names names = names_of(view.sign, state.signer);
   const bool may = !view.sign.busy && !state.new_name.empty() && !state.new_pin.empty() &&
                    (view.people.empty() || !names.pin.empty());
@@ -146,7 +143,7 @@ void draw_people(const DeskView& view, PanelState& state, const Look& look, Inte
 
 void draw_settings(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
   const SettingsView& settings = view.settings;
-  page_title(look, "Settings");
+  title(look, "Settings");
   heading(look, "The shop");
   quiet(look, "tank files: " + settings.folder);
   quiet(look, "log: " + settings.log);
@@ -157,12 +154,16 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   ImGui::SameLine();
   if (button(look, "Open the demonstration shop")) out.emplace_back(OpenDemonstration{});
   heading(look, "Units that are shown");
-  SetUnits chosen{settings.concentration, settings.volume, settings.temperature};
-  bool changed = choose("concentrations", settings.concentrations, chosen.concentration, look);
-  changed = choose("volumes", settings.volumes, chosen.volume, look) || changed;
-  changed = choose("temperatures", settings.temperatures, chosen.temperature, look) || changed;
-  if (changed) out.emplace_back(chosen);
-  quiet(look, "Any unit may be typed. A bare number has the unit its field is headed with.");
+  for (std::size_t i = 0; i < settings.units.size(); ++i) {
+    if (i % 2 == 1) ImGui::SameLine(look.px(320));
+    const SettingsView::Choice& unit = settings.units[i];
+    SetUnit chosen{static_cast<int>(i), unit.chosen};
+    if (choose(unit.what.c_str(), unit.all, chosen.chosen, look)) out.emplace_back(chosen);
+  }
+  quiet(
+      look,
+      "Any unit may be typed. A bare number has the unit its field is headed with. What cannot be told in the "
+      "chosen unit is shown in g/L; printed sheets and the log have g/L, kg and L.");
   heading(look, "Look");
   for (const auto& [words, scale] :
        {std::pair{"100 %", 1.0F}, {"125 %", 1.25F}, {"150 %", 1.5F}, {"200 %", 2.0F}}) {
@@ -173,10 +174,15 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   }
   bool dark = settings.dark;
   if (ImGui::Checkbox("dark page", &dark)) out.emplace_back(SetLook{settings.scale, dark});
-  heading(look, "Paper of slips and hand-overs");
+  heading(look, "Printed sheets");
   if (ImGui::RadioButton("A4", !settings.letter)) out.emplace_back(SetPaper{false});
   ImGui::SameLine();
   if (ImGui::RadioButton("Letter", settings.letter)) out.emplace_back(SetPaper{true});
+  std::string command = settings.print_command;
+  ImGui::SetNextItemWidth(look.px(260));
+  if (ImGui::InputTextWithHint("print command", "lp", &command)) out.emplace_back(SetPrintCommand{command});
+  note_place(look, "print command");
+  quiet(look, "Run as it stands, without a shell; {file} is the sheet, else it comes last.");
   heading(look, "Shifts");
   quiet(look, view.hand_over.shifts_set ? "Set: " + view.shift.shift : "None are set.");
   static const std::vector<std::string> patterns{"3x8", "2x12"};

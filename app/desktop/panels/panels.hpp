@@ -43,6 +43,8 @@ struct PanelState {
   Part part = Part::pages;
   bool go_to_part = false, key_list = false;
   std::optional<PageName> awaited;  ///< asked for with the keys: the focus goes there once it is drawn
+  std::string agreed_plugin, withdrawn_plugin;  ///< SHA-256 of what is being decided
+  std::string leaving;                          ///< who is to be retired
 };
 
 /// Those who sign, as chosen in the sign panel.
@@ -59,21 +61,23 @@ void draw_line(const LineView& view, const Look& look, Intents& out);
 void draw_readings(const ReadingsView& view, PanelState& state, const Look& look, Intents& out);
 void draw_state(const StateView& view, const Look& look);
 void draw_additions(const AdditionsView& view, PanelState& state, const Look& look, Intents& out);
-void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, const Look& look, Intents& out);
+void draw_slip(const SlipView& view, const SignView& sign, const PrintedView& printed, PanelState& state,
+               const Look& look, Intents& out);
 void draw_sign(const SignView& view, const AdditionsView& additions, PanelState& state, const Look& look,
                Intents& out);
-void draw_chemistry(const ChemistryView& view, const SourceView& source, const Look& look, Intents& out);
+void draw_chemistry(const ChemistryView& view, const SourceView& source, PanelState& state, const Look& look,
+                    Intents& out);
 void draw_shift(const ShiftView& view, const Look& look, Intents& out);
 
 // The other pages.
-void draw_forecast(const ForecastView& view, const std::string& tank, PanelState& state, const Look& look,
-                   Intents& out);
+void draw_forecast(const ForecastView& view, const PrintedView& printed, const std::string& tank,
+                   PanelState& state, const Look& look, Intents& out);
 void draw_trends(const TrendsView& view, const std::string& tank, PanelState& state, const Look& look,
                  Intents& out);
 void draw_log(const LogView& view, PanelState& state, const Look& look, Intents& out);
-void draw_hand_over(const HandOverView& view, const SignView& sign, PanelState& state, const Look& look,
-                    Intents& out);
-void draw_bath_types(const std::vector<BathTypeRow>& rows, const Look& look);
+void draw_hand_over(const HandOverView& view, const SignView& sign, const PrintedView& printed,
+                    PanelState& state, const Look& look, Intents& out);
+void draw_bath_types(const BathTypesView& view, PanelState& state, const Look& look, Intents& out);
 void draw_people(const DeskView& view, PanelState& state, const Look& look, Intents& out);
 void draw_settings(const DeskView& view, PanelState& state, const Look& look, Intents& out);
 void draw_first_start(const DeskView& view, PanelState& state, const Look& look, Intents& out);
@@ -85,6 +89,9 @@ void draw_key_list(PanelState& state, const Look& look);
 [[nodiscard]] bool focus_lost();
 /// Around the last item, where the focus would not be seen.
 void ring(const Look& look);
+/// A button where there is a printed sheet; the sheet itself in the place of a page.
+void draw_show_printed(const PrintedView& view, const Look& look, Intents& out);
+void draw_printed(const PrintedView& view, const Look& look, Intents& out);
 
 /// The whole window.
 void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intents& out);

@@ -4,47 +4,12 @@
 
 #include <algorithm>
 #include <cmath>
-#include <cstdio>
 
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
 namespace {
-
-std::string short_figure(double value) {
-  char text[32];
-  std::snprintf(text, sizeof text, "%.4g", value);
-  return text;
-}
-
-/// The value of a line at x, between its points; NaN outside.
-double value_at(const charts::Series& line, double x) {
-  for (std::size_t i = 1; i < line.x.size(); ++i)
-    if (line.x[i - 1] <= x && x <= line.x[i]) {
-      const double width = line.x[i] - line.x[i - 1];
-      const double share = width > 0 ? (x - line.x[i - 1]) / width : 0;
-      return line.y[i - 1] + share * (line.y[i] - line.y[i - 1]);
-    }
-  return std::nan("");
-}
-
-/// One row a point, as spreadsheets take it.
-std::string data_of(const charts::Chart& chart) {
-  std::string text = chart.x_title;
-  for (const auto& line : chart.lines)
-    text +=
-        '\t' + (line.name.empty() ? chart.title : line.name) + (chart.unit.empty() ? "" : " " + chart.unit);
-  text += '\n';
-  if (chart.lines.empty()) return text;
-  for (const double x : chart.lines.front().x) {
-    text += short_figure(x);
-    for (const auto& line : chart.lines) text += '\t' + short_figure(value_at(line, x));
-    text += '\n';
-  }
-  for (const auto& found : chart.found)
-    text += short_figure(found.x) + '\t' + short_figure(found.y) + "\tfound\n";
-  return text;
-}
 
 void draw_cursor(const charts::Chart& chart, const charts::Frame& frame, double x, DrawListCanvas& canvas,
                  const Look& look) {
@@ -73,7 +38,7 @@ void draw_plot(const charts::Chart& chart, float width_at_100, float height_at_1
   const ImVec2 origin = ImGui::GetCursorScreenPos();
   ImGui::PushID(chart.title.c_str());
   if (ImGui::InvisibleButton("plot", {look.px(width_at_100), look.px(height_at_100)}))
-    ImGui::SetClipboardText(data_of(chart).c_str());
+    ImGui::SetClipboardText(figures_of(chart).c_str());
   DrawListCanvas canvas(*ImGui::GetWindowDrawList(), look.fonts, origin, look.scale);
   const charts::Frame frame = draw(chart, canvas, {0, 0, width_at_100, height_at_100}, look.palette);
   float* cursor = ImGui::GetStateStorage()->GetFloatRef(ImGui::GetID("cursor"), 0.5F);

@@ -107,6 +107,7 @@ class ReadingsPanel {
       ImGui::TableNextColumn();
       field("##value", index, Field::value, reading.value, -1);
       ImGui::TableNextColumn();
+      quiet(look_, reading.value_unit);
       ImGui::TableNextColumn();
     } else {
       ImGui::TableNextColumn();

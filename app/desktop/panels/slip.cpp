@@ -6,12 +6,13 @@
 
 namespace bathwright::desktop {
 
-void draw_slip(const SlipView& view, const SignView& sign, PanelState& state, const Look& look,
-               Intents& out) {
+void draw_slip(const SlipView& view, const SignView& sign, const PrintedView& printed, PanelState& state,
+               const Look& look, Intents& out) {
   heading(look, "Slip " + std::to_string(view.number) + " is open");
   quiet(look, view.issued);
   standing(look, static_cast<int>(view.approved_by_second ? charts::State::in_window : charts::State::act),
            view.approved);
+  draw_show_printed(printed, look, out);
   // The focus was on the button that issued it, which is gone.
   if (std::exchange(state.slip, view.number) != view.number && ImGui::GetIO().NavVisible)
     ImGui::SetKeyboardFocusHere();

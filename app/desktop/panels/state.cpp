@@ -1,3 +1,4 @@
+#include "figures.hpp"
 #include "panels.hpp"
 
 namespace bathwright::desktop {
@@ -31,6 +32,7 @@ void draw_state(const StateView& view, const Look& look) {
     quiet(look, row.unit + (row.unit.empty() ? "aim " : ", aim ") + row.aim);
   }
   ImGui::EndTable();
+  if (!view.rows.empty()) copies(look, "the state", [&] { return figures_of(view); });
 }
 
 }  // namespace bathwright::desktop

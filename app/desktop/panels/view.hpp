@@ -4,6 +4,9 @@
 
 #include <bathwright/charts/chart.hpp>
 #include <bathwright/charts/signs.hpp>
+#include <bathwright/sheets/picture.hpp>
+#include <memory>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -32,13 +35,14 @@ struct ReadingRow {
   int method = 0;
   std::string sample, titrant, burette, value;  ///< as typed; `value` of a concentration
   bool is_value = false;
-  std::string result;  ///< "70.7 ± 0.46 g/L"; empty until it can be worked out
-  std::string fault;   ///< what is wrong with this row and how to mend it
+  std::string value_unit;  ///< of a bare `value`
+  std::string result;      ///< "70.7 ± 0.46 g/L"; empty until it can be worked out
+  std::string fault;       ///< what is wrong with this row and how to mend it
 };
 
 /// What a bare number means, for the heads of the fields.
 struct HeadWords {
-  std::string volume, temperature, value;
+  std::string volume, temperature;
 };
 
 struct ReadingsView {
@@ -176,31 +180,58 @@ struct ForecastView {
   std::vector<std::pair<std::string, std::string>> figures;  ///< cost, waste, water a day; bleed that holds
   std::vector<charts::Chart> charts;
   std::vector<std::string> notes, faults;
-  bool working = false;
+  bool working = false, may_print = false;
   double progress = 0;
 };
 
 struct TrendsView {
   std::string empty;
   std::vector<charts::Chart> charts;
-  std::vector<std::string> findings;
+  std::vector<std::string> findings, notes;
 };
 
 struct BathTypeRow {
-  std::string id, version, state, file, why;
+  std::string id, version, state, file, sha256, why;
   charts::State mark = charts::State::in_window;
+  bool may_be_allowed = false, may_be_withdrawn = false;  ///< by the person at the window
+};
+
+/// A plugin that was looked at, to be allowed or left.
+struct ExaminedView {
+  std::string sha256, what_it_means;
+  std::vector<std::pair<std::string, std::string>> facts;
+  std::vector<std::string> faults;  ///< any: it cannot be allowed
+};
+
+struct BathTypesView {
+  std::vector<BathTypeRow> rows;
+  std::optional<ExaminedView> examined;
+  bool working = false;
 };
 
 struct PersonRow {
   std::string name, role, signs;
+  bool active = true;
 };
 
 struct SettingsView {
-  std::string folder, log;
-  std::vector<std::string> concentrations, volumes, temperatures;
-  int concentration = 0, volume = 0, temperature = 0;
+  std::string folder, log, print_command;
+  struct Choice {
+    std::string what;
+    std::vector<std::string> all;
+    int chosen = 0;
+  };
+  std::vector<Choice> units;
   float scale = 1;
   bool dark = false, letter = false;
+};
+
+/// The sheet that was printed last, and what is seen of it.
+struct PrintedView {
+  std::string file;  ///< empty: none
+  bool open = false, printing = false;
+  std::string command, said, fault;
+  std::vector<std::shared_ptr<const sheets::Picture>> sheets;
 };
 
 struct SourceView {
@@ -229,9 +260,10 @@ struct DeskView {
   HandOverView hand_over;
   ForecastView forecast;
   TrendsView trends;
-  std::vector<BathTypeRow> bath_types;
+  BathTypesView bath_types;
   std::vector<PersonRow> people;
   SettingsView settings;
+  PrintedView printed;
   SourceView source;
   StatusView status;
 };

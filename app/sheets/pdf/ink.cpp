@@ -1,5 +1,7 @@
 #include "ink.hpp"
 
+#include "charts/cairo_canvas.hpp"
+
 namespace bathwright::sheets::pdf {
 namespace {
 
@@ -15,7 +17,9 @@ double from_pango(int units) { return static_cast<double>(units) / PANGO_SCALE; 
 
 double Words::baseline() const { return from_pango(pango_layout_get_baseline(layout_.get())) - trim_; }
 
-Ink::Ink(cairo_surface_t* surface) : drawing_(cairo_create(surface)) {}
+Ink::Ink(cairo_surface_t* surface, double scale) : drawing_(cairo_create(surface)) {
+  cairo_scale(drawing_.get(), scale, scale);
+}
 
 Words Ink::words(const std::string& text, const Look& look) const { return words(text, look, -1); }
 
@@ -74,6 +78,16 @@ void Ink::full_square(double left, double top, double size, charts::Colour colou
   set(colour);
   cairo_rectangle(drawing_.get(), left, top, size, size);
   cairo_fill(drawing_.get());
+}
+
+void Ink::chart(const charts::Chart& chart, double left, double top, double width, double height) {
+  constexpr double points_a_pixel = 0.66;  // letters of 11 pixels are 7 points
+  shrink(left, top, 1);
+  cairo_translate(drawing_.get(), left, top);
+  cairo_scale(drawing_.get(), points_a_pixel, points_a_pixel);
+  charts::CairoCanvas canvas(drawing_.get());
+  draw(chart, canvas, {0, 0, width / points_a_pixel, height / points_a_pixel}, colours);
+  restore();
 }
 
 void Ink::shrink(double left, double top, double times) {

@@ -4,7 +4,7 @@
 #include <cairo.h>
 #include <pango/pangocairo.h>
 
-#include <bathwright/charts/palette.hpp>
+#include <bathwright/charts/chart.hpp>
 #include <memory>
 #include <string>
 
@@ -35,8 +35,8 @@ class Words {
 
 class Ink {
  public:
-  /// The surface outlives it.
-  explicit Ink(cairo_surface_t* surface);
+  /// The surface outlives it; `scale` of its dots are a point.
+  explicit Ink(cairo_surface_t* surface, double scale = 1);
 
   /// On one line.
   [[nodiscard]] Words words(const std::string& text, const Look& look) const;
@@ -47,6 +47,7 @@ class Ink {
   void line(double left, double y, double right, charts::Colour colour, double width = 0.5);
   void open_square(double left, double top, double size);
   void full_square(double left, double top, double size, charts::Colour colour);
+  void chart(const charts::Chart& chart, double left, double top, double width, double height);
   /// Everything drawn until `restore` is smaller, seen from a point.
   void shrink(double left, double top, double times);
   void restore();

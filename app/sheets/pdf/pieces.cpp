@@ -143,6 +143,23 @@ class Maker {
     return {together(std::move(pieces))};
   }
 
+  Pieces operator()(const Charts& drawn) const {
+    constexpr double high = 138, apart = 14, below = 8;
+    const double half = (width_ - apart) / 2;
+    Pieces rows;
+    for (std::size_t i = 0; i < drawn.charts.size(); i += 2)
+      rows.push_back(
+          {high + below,
+           [left = drawn.charts[i],
+            right = i + 1 < drawn.charts.size() ? std::optional(drawn.charts[i + 1]) : std::nullopt,
+            half](Ink& ink, double x, double y) {
+             ink.chart(left, x, y, half, high);
+             if (right) ink.chart(*right, x + half + apart, y, half, high);
+           },
+           false, nullptr});
+    return rows;
+  }
+
   /// Blocks from `first` on that stand beside the table before them, or nothing where they do not fit there.
   std::optional<Piece> table_and(const Table& table, const std::vector<Block>& blocks,
                                  std::size_t& next) const {

@@ -90,13 +90,13 @@ Section levels(const AdditionSlip& slip) {
     section.blocks.push_back(
         Paragraph{"Lab and book weighed against each other, as the plan starts: " + used + "."});
   if (fixed(slip.sheet.now.pH, 2) != fixed(slip.analysis.pH, 2))
-    section.blocks.push_back(Paragraph{"At " + units::show(slip.tank.temperature, "degC", 3) +
+    section.blocks.emplace_back(Paragraph{"At " + units::show(slip.tank.temperature, "degC", 3) +
                                        ", for which the steps are worked out, the pH is " +
                                        fixed(slip.sheet.now.pH, 2) + "."});
   if (plan)
     for (const std::string& words :
          {chance_of_ending_inside(slip.type, *plan), chance_of_staying_dissolved(slip.tank, *plan)})
-      if (!words.empty()) section.blocks.push_back(Paragraph{words});
+      if (!words.empty()) section.blocks.emplace_back(Paragraph{words});
   return section;
 }
 

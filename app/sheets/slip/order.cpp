@@ -169,11 +169,11 @@ Section order(const AdditionSlip& slip, const dosing::Plan& plan) {
   for (std::size_t g = 0; g < groups.size(); ++g) {
     if (groups[g].front().shift > shift) {
       shift = groups[g].front().shift;
-      section.blocks.push_back(Paragraph{for_the_next_shift(std::span(groups).subspan(g))});
+      section.blocks.emplace_back(Paragraph{for_the_next_shift(std::span(groups).subspan(g))});
     }
     section.blocks.emplace_back(task_of(slip, plan, groups[g]));
   }
-  for (const std::string& words : what_it_takes(slip, plan)) section.blocks.push_back(Paragraph{words});
+  for (const std::string& words : what_it_takes(slip, plan)) section.blocks.emplace_back(Paragraph{words});
   return section;
 }
 
@@ -209,7 +209,7 @@ Section watch(const dosing::Plan& plan) {
       if (!check.ok && !check.stops) last_detail[check.name] = check.detail;
   Section section{"Watch", {}};
   for (const auto& [name, detail] : last_detail)
-    section.blocks.push_back(Paragraph{pretty_check(name) + ": " + detail});
+    section.blocks.emplace_back(Paragraph{pretty_check(name) + ": " + detail});
   return section;
 }
 

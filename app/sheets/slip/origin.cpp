@@ -80,9 +80,9 @@ Section origin(const AdditionSlip& slip) {
 Section stopping(const AdditionSlip& slip) {
   Section section;
   for (const auto* findings : {&slip.changed_since, &slip.stops})
-    for (const std::string& finding : *findings) section.blocks.push_back(Stop{finding});
+    for (const std::string& finding : *findings) section.blocks.emplace_back(Stop{finding});
   for (const auto& suspect : slip.analysis.suspects)
-    section.blocks.push_back(Stop{suspect.what + ": " + suspect.reason + " " + suspect.try_this});
+    section.blocks.emplace_back(Stop{suspect.what + ": " + suspect.reason + " " + suspect.try_this});
   return section;
 }
 

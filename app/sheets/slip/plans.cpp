@@ -25,10 +25,10 @@ std::string later(const dosing::Rest& rest) {
 Section not_at_its_aim(const dosing::Plan& plan) {
   Section section{"Not at its aim", {}};
   for (const auto* said : {&plan.unmet, &plan.left_alone})
-    for (const std::string& words : *said) section.blocks.push_back(Paragraph{words});
-  for (const dosing::Rest& rest : plan.rest) section.blocks.push_back(Paragraph{later(rest)});
-  for (const dosing::Wait& wait : plan.waits) section.blocks.push_back(Paragraph{waiting(wait)});
-  for (const std::string& conflict : plan.conflicts) section.blocks.push_back(Paragraph{"Why: " + conflict});
+    for (const std::string& words : *said) section.blocks.emplace_back(Paragraph{words});
+  for (const dosing::Rest& rest : plan.rest) section.blocks.emplace_back(Paragraph{later(rest)});
+  for (const dosing::Wait& wait : plan.waits) section.blocks.emplace_back(Paragraph{waiting(wait)});
+  for (const std::string& conflict : plan.conflicts) section.blocks.emplace_back(Paragraph{"Why: " + conflict});
   return section;
 }
 
@@ -42,7 +42,7 @@ Section other_plans(const AdditionSlip& slip) {
     for (const auto& addition : plan.additions)
       if (addition.chemical != "water")
         what += (what.empty() ? "" : ", ") + measured(addition.amount, addition.unit) + " " + addition.name;
-    section.blocks.push_back(Paragraph{plan.kind + ", " + money(plan.cost, slip.tank) + ": " + plan.reason +
+    section.blocks.emplace_back(Paragraph{plan.kind + ", " + money(plan.cost, slip.tank) + ": " + plan.reason +
                                        (plan.feasible ? "" : ". Not to be carried out as it stands") + ". " +
                                        (what.empty() ? "Nothing goes in." : "In all: " + what + ".")});
   }
@@ -52,7 +52,7 @@ Section other_plans(const AdditionSlip& slip) {
 Section bringing_down(const dosing::Plan& plan) {
   Section section{"Too high when that is done", {}};
   for (const auto& removal : plan.removals)
-    section.blocks.push_back(Paragraph{
+    section.blocks.emplace_back(Paragraph{
         removal.label + " goes down as " + pretty(removal.solid) + ": " + measured(removal.whole_kg, "kg") +
         " " + removal.name + " for all of it. Only once the steps are in and mixed: first half, " +
         measured(removal.first_kg, "kg") + ", settle, filter, analyse again."});
@@ -62,7 +62,7 @@ Section bringing_down(const dosing::Plan& plan) {
 Section refused(const AdditionSlip& slip) {
   Section section{"Refused", {}};
   for (const auto& refusal : slip.sheet.refused)
-    section.blocks.push_back(Paragraph{refusal.reason + " (" + refusal.rule + ")"});
+    section.blocks.emplace_back(Paragraph{refusal.reason + " (" + refusal.rule + ")"});
   return section;
 }
 

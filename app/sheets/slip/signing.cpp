@@ -51,7 +51,7 @@ Section signing(const AdditionSlip& slip) {
     lines.push_back({"nonconformance", ""});
   }
   section.blocks.push_back(std::move(lines));
-  section.blocks.push_back(Paragraph{std::string(deferral) + " Computed with " + by.program + "."});
+  section.blocks.emplace_back(Paragraph{std::string(deferral) + " Computed with " + by.program + "."});
   return section;
 }
 

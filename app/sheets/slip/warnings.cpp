@@ -53,7 +53,7 @@ std::vector<std::string> notes_by_what_they_say(const std::vector<std::string>& 
 Section warnings(const AdditionSlip& slip) {
   Section section = cautions(slip.sheet.cautions);  // each on lines of its own: one of them is meant for you
   if (const std::string on_labels = codes(slip); !on_labels.empty())
-    section.blocks.push_back(Paragraph{"On the labels: " + on_labels + "; see the SDS."});
+    section.blocks.emplace_back(Paragraph{"On the labels: " + on_labels + "; see the SDS."});
   return section;
 }
 
@@ -62,9 +62,9 @@ Section doubtful(const AdditionSlip& slip) {
   std::string text;
   for (const std::string& note : notes_by_what_they_say(slip.analysis.notes))
     text += (text.empty() ? "" : " ") + note + ".";
-  if (!text.empty()) section.blocks.push_back(Paragraph{text});
+  if (!text.empty()) section.blocks.emplace_back(Paragraph{text});
   if (const std::string model = in_one(doubts(slip.sheet.now.warnings)); !model.empty())
-    section.blocks.push_back(Paragraph{model});
+    section.blocks.emplace_back(Paragraph{model});
   return section;
 }
 

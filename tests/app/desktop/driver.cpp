@@ -51,6 +51,7 @@ Driver::Driver(int width, int height, float scale, const std::filesystem::path& 
   auto window = desktop::Window::open({.width = width, .height = height, .scale = scale});
   if (!window) throw std::runtime_error(text(window.problems()));
   window_ = std::make_unique<desktop::Window>(*std::move(window));
+  textures_ = std::make_unique<desktop::Textures>();
   desk_->drawn_by(window_->drawn_by());
   screen_ = std::make_unique<Screen>(display_.name());
   pictures(5);
@@ -58,6 +59,7 @@ Driver::Driver(int width, int height, float scale, const std::filesystem::path& 
 
 Driver::~Driver() {
   screen_.reset();
+  textures_.reset();
   window_.reset();
   desk_.reset();
 }
@@ -65,7 +67,9 @@ Driver::~Driver() {
 void Driver::draw(Intents& intents) {
   desk_->update();
   places_.clear();
-  draw_desk(desk_->view(), state_, {window_->fonts(), palette(window_->dark()), window_->scale(), &places_},
+  textures_->forget_unused();
+  draw_desk(desk_->view(), state_,
+            {window_->fonts(), palette(window_->dark()), window_->scale(), &places_, textures_.get()},
             intents);
   for (const Intent& intent : intents) desk_->handle(intent);
 }

@@ -11,6 +11,7 @@
 #include "model/desk.hpp"
 #include "panels/panels.hpp"
 #include "screen.hpp"
+#include "window/textures.hpp"
 #include "window/window.hpp"
 
 namespace desktop_test {
@@ -85,6 +86,7 @@ class Driver {
   Display display_;
   std::unique_ptr<bathwright::desktop::Desk> desk_;
   std::unique_ptr<bathwright::desktop::Window> window_;
+  std::unique_ptr<bathwright::desktop::Textures> textures_;
   std::unique_ptr<Screen> screen_;
   bathwright::desktop::PanelState state_;
   bathwright::desktop::Places places_;

@@ -71,7 +71,7 @@ DeskView a_view() {
   view.line.selected = 3;
   view.tank_title = "N-3 nickel";
   view.readings.rows = {
-      {"Ni²⁺", {"edta nickel", "a concentration"}, 0, "2 mL", "0.1 mol/L", "", "", false, "", ""}};
+      {"Ni²⁺", {"edta nickel", "a concentration"}, 0, "2 mL", "0.1 mol/L", "", "", false, "", "", ""}};
   view.state.rows = {{"nickel",
                       "g/L",
                       {60, 75, 90, 70, 75, 1},
@@ -111,9 +111,7 @@ TEST_CASE("every page is drawn, empty and full, at every scale", "[unit][desktop
     for (const PageName page : every_page) {
       DeskView empty, full = a_view();
       empty.page = full.page = page;
-      empty.settings.concentrations = full.settings.concentrations = {"g/L"};
-      empty.settings.volumes = full.settings.volumes = {"L"};
-      empty.settings.temperatures = full.settings.temperatures = {"°C"};
+      empty.settings.units = full.settings.units = {{"concentrations", {"g/L"}, 0}, {"volumes", {"L"}, 0}};
       for (int i = 0; i < 3; ++i) {
         CHECK(unseen.picture(empty).empty());
         CHECK(unseen.picture(full).empty());
@@ -162,6 +160,120 @@ TEST_CASE("a step of an open slip is ticked once", "[unit][desktop]") {
   const Intents out = unseen.click(view, "step 2");
   REQUIRE(count<StepDone>(out) == 1);
   CHECK(count<CloseSlip>(unseen.click(view, "Close the slip: carried out")) == 0);  // a step is still to do
+}
+
+TEST_CASE("no single click lets a plugin run or ends its trust", "[unit][desktop]") {
+  Unseen unseen;
+  DeskView view = a_view();
+  view.page = PageName::bath_types;
+  view.bath_types.rows = {
+      {"gold", "1.0", "not allowed yet", "/mine/gold.bathtype.so", "ab12", "", charts::State::stop, true,
+       false},
+      {"tin", "1.0", "ready", "/mine/tin.bathtype.so", "cd34", "", charts::State::in_window, false, true}};
+  const Intents asked = unseen.click(view, "look at gold");
+  REQUIRE(count<ExaminePlugin>(asked) == 1);
+  view.bath_types.examined =
+      ExaminedView{"ab12", "It is a program.", {{"file", "/mine/gold.bathtype.so"}}, {}};
+  CHECK(count<AllowPlugin>(unseen.click(view, "Allow it")) == 0);
+  CHECK(count<AllowPlugin>(unseen.click(view, "agree")) == 0);
+  CHECK(count<AllowPlugin>(unseen.click(view, "Allow it")) == 1);
+  CHECK(count<AllowPlugin>(unseen.click(view, "Allow it")) == 0);  // the tick is gone
+  view.bath_types.examined->faults = {"it prints"};
+  unseen.picture(view);
+  CHECK(unseen.places.count("Allow it") == 0);
+  view.bath_types.examined.reset();
+  CHECK(count<WithdrawPlugin>(unseen.click(view, "withdraw tin")) == 0);
+  CHECK(count<WithdrawPlugin>(unseen.click(view, "Withdraw trust")) == 1);
+}
+
+TEST_CASE("somebody is retired by a second click that is signed", "[unit][desktop]") {
+  Unseen unseen;
+  DeskView view = a_view();
+  view.page = PageName::people;
+  view.people = {{"A. Chemist", "chemist", "yes", true}, {"M. Okafor", "operator", "yes", true}};
+  view.sign.people = {"A. Chemist", "M. Okafor"};
+  for (int i = 0; i < 3; ++i) unseen.picture(view);  // columns settle
+  CHECK(count<RetirePerson>(unseen.click(view, "left M. Okafor")) == 0);
+  CHECK(count<RetirePerson>(unseen.click(view, "Retire")) == 0);  // no PIN
+  unseen.state.signer.pin = "2468";
+  const Intents out = unseen.click(view, "Retire");
+  REQUIRE(count<RetirePerson>(out) == 1);
+  for (const Intent& intent : out)
+    if (const auto* retire = std::get_if<RetirePerson>(&intent)) {
+      CHECK(retire->name == "M. Okafor");
+      CHECK(retire->names.by == "A. Chemist");
+    }
+}
+
+TEST_CASE("figures are copied as rows for a spreadsheet", "[unit][desktop]") {
+  Unseen unseen;
+  ImGui::GetIO().DisplaySize.y = 3000;  // nothing out of sight
+  DeskView view = a_view();
+  view.chemistry.path = {{"pH",
+                          "",
+                          "",
+                          "kg added",
+                          {},
+                          {},
+                          {},
+                          {{"", charts::Meaning::predicted, {0, 1}, {4.1, 4.2}}},
+                          {},
+                          {},
+                          {},
+                          {},
+                          0}};
+  const auto copied = [&](const char* name) {
+    unseen.click(view, name);
+    return std::string(ImGui::GetClipboardText());
+  };
+  CHECK(copied("copy the state") ==
+        "component\tunit\tfound\tthen\taim\tstate\nnickel\tg/L\t70.0\t75.0\t75.0\tin window\n");
+  CHECK(
+      copied("copy the additions").starts_with("chemical\tamount\tunit\tcost\nboric acid\t14\tkg\t27 EUR\n"));
+  CHECK(copied("copy the path") == "pH\nkg added\tpH\n0\t4.1\n1\t4.2\n\n");
+  view.page = PageName::forecast;
+  view.forecast.limits = {{"aluminium", "day 41", "", "by-\tproduct", charts::State::act}};
+  view.forecast.figures = {{"water a day", "20 L"}};
+  CHECK(copied("copy the limits") ==
+        "limit\tmet\t90 %\twhy\naluminium\tday 41\t\tby- product\n\nwater a day\t20 L\n");
+  view.page = PageName::trends;
+  view.trends.findings = {"pH: a run"};
+  CHECK(copied("copy the findings") == "finding\npH: a run\n");
+  view.page = PageName::log;
+  view.log.rows.resize(1);
+  CHECK(copied("Copy the rows") ==
+        "entry\ttime\tkind\ttank\tby\twhat\n1\t2026-03-02 05:40\tnote\tN-3\tokafor\tfilter\n");
+}
+
+TEST_CASE("the charts along the additions are saved by name", "[unit][desktop]") {
+  Unseen unseen;
+  ImGui::GetIO().DisplaySize.y = 3000;
+  DeskView view = a_view();
+  view.chemistry.path.resize(1);
+  CHECK(count<SaveCharts>(unseen.click(view, "Save the charts")) == 0);
+  unseen.state.file = "path.svg";
+  const Intents out = unseen.click(view, "Save the charts");
+  REQUIRE(count<SaveCharts>(out) == 1);
+  for (const Intent& intent : out)
+    if (const auto* save = std::get_if<SaveCharts>(&intent)) CHECK(save->charts == Charts::path);
+}
+
+TEST_CASE("a printed sheet stands in the place of the page until it is left", "[unit][desktop]") {
+  Unseen unseen;
+  DeskView view = a_view();
+  view.slip.number = 118;
+  unseen.picture(view);
+  CHECK(unseen.places.count("Show the printed sheet") == 0);  // nothing was printed
+  view.printed.file = "/shop/printed/slip-118.pdf";
+  CHECK(count<ShowPrinted>(unseen.click(view, "Show the printed sheet")) == 1);
+  view.printed.open = true;
+  view.printed.sheets = {std::make_shared<const sheets::Picture>(sheets::Picture{500, 700, {}})};
+  CHECK(count<PrintSheet>(unseen.click(view, "Print")) == 1);
+  CHECK(unseen.places.at("sheet 1").z - unseen.places.at("sheet 1").x == Approx(500));
+  CHECK(unseen.places.count("Close the slip: carried out") == 0);
+  view.printed.printing = true;
+  CHECK(count<PrintSheet>(unseen.click(view, "Print")) == 0);  // a second click is no second copy
+  CHECK(count<ClosePrinted>(unseen.click(view, "Back")) == 1);
 }
 
 TEST_CASE("the panels' code stays within its share of a picture", "[unit][desktop]") {

@@ -39,6 +39,10 @@ int main(int count, char** arguments) {
   rest();
   driver.bring_into_sight("step 1");
   driver.save(folder / "slip.png");
+  driver.desk().handle(bathwright::desktop::ShowPrinted{});
+  rest();
+  driver.pictures(3);
+  driver.save(folder / "printed.png");
   for (const auto& [page, name] : {std::pair{PageName::forecast, "forecast"},
                                    {PageName::trends, "trends"},
                                    {PageName::log, "log"},

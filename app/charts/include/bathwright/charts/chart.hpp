@@ -49,8 +49,9 @@ struct Window {
 };
 
 struct Chart {
-  std::string title;  ///< "orthophosphite"
-  std::string unit;   ///< "g/L"
+  std::string title;     ///< "orthophosphite"
+  std::string unit;      ///< "g/L"
+  std::string level_of;  ///< id of the quantity whose level it shows, for whoever shows it in another unit
   std::string x_title;
   Scale x_scale = Scale::linear, y_scale = Scale::linear;
   std::vector<Band> bands;

@@ -13,4 +13,8 @@ namespace bathwright::charts {
 /// be written.
 Outcome write_page(const std::filesystem::path& file, const Page& page);
 
+/// The page as the text of an SVG element, to stand in another document: one for each, for the letters of two
+/// would be mixed up.
+[[nodiscard]] std::string svg_of(const Page& page);
+
 }  // namespace bathwright::charts

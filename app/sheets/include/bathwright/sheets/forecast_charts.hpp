@@ -6,8 +6,8 @@
 
 namespace bathwright::sheets {
 
-/// One chart for each level that moves or is near a limit, the soonest limit first; then for each watched solid that
-/// comes near saturation, at work and at rest; the pH; cost and waste. At most twelve.
+/// One chart for each level that moves or is near a limit, the soonest limit first; then for each watched
+/// solid that comes near saturation, at work and at rest; the pH; cost and waste. At most twelve.
 [[nodiscard]] charts::Page forecast_charts(const ForecastPage& page);
 
 }  // namespace bathwright::sheets

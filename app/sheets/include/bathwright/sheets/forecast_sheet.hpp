@@ -2,16 +2,18 @@
 #pragma once
 
 #include <bathwright/forecast/forecast.hpp>
-#include <bathwright/sheets/text.hpp>
+#include <bathwright/sheets/page.hpp>
 
 namespace bathwright::sheets {
 
-/// "2026-04-18", the date of a day of a forecast, for documents and tables; "" where the policy has no date to
-/// count from, or there is no day.
+/// "2026-04-18", the date of a day of a forecast, for documents and tables; "" where the policy has no date
+/// to count from, or there is no day.
 [[nodiscard]] std::string iso_date(const forecast::Policy& policy, const std::optional<double>& day);
 
 /// What a limit needs to be held.
 struct BleedToHold {
+  std::string quantity;                  ///< id
+  double g_per_L = 0;                    ///< its limit
   std::string limit;                     ///< "aluminium at 15.00 g/L"
   std::optional<double> litres_per_day;  ///< to bleed beyond the policy's own; nothing: `why_no_bleed`
   /// Times the policy's work that its own bleed can carry; nothing: any, or `why_no_load`.
@@ -44,5 +46,8 @@ struct ForecastPage {
 [[nodiscard]] const PolicySummary* cheapest_that_holds(const std::vector<PolicySummary>& policies);
 
 [[nodiscard]] Lines forecast_sheet(const ForecastPage& page);
+
+/// The same to print, with its charts.
+[[nodiscard]] Page forecast_page(const ForecastPage& page);
 
 }  // namespace bathwright::sheets

@@ -1,6 +1,7 @@
 // A page as what stands on it, whatever it is printed as: text, HTML, or PDF (page_pdf.hpp).
 #pragma once
 
+#include <bathwright/charts/chart.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <cstdint>
 #include <variant>
@@ -34,7 +35,12 @@ struct SignatureLine {
 };
 using SignatureLines = std::vector<SignatureLine>;
 
-using Block = std::variant<Paragraph, Stop, Fields, Table, Task, SignatureLines>;
+/// Two beside each other; left out where a page is only text.
+struct Charts {
+  std::vector<charts::Chart> charts;
+};
+
+using Block = std::variant<Paragraph, Stop, Fields, Table, Task, SignatureLines, Charts>;
 
 /// How a section is read, for paper, where room is short.
 enum class Reading : std::uint8_t {

@@ -1,0 +1,253 @@
+// The model behind the window on the demonstration shop, without a window.
+#include <stdlib.h>
+
+#include <algorithm>
+#include <catch2/catch.hpp>
+#include <chrono>
+#include <fstream>
+#include <thread>
+
+#include "model/desk.hpp"
+
+using namespace bathwright;
+using namespace bathwright::desktop;
+namespace fs = std::filesystem;
+
+namespace {
+
+/// A home of its own for what the program keeps, gone with the object.
+class Home {
+ public:
+  Home() {
+    std::string name = (fs::temp_directory_path() / "desk-model-XXXXXX").string();
+    REQUIRE(::mkdtemp(name.data()));
+    path = name;
+    for (const char* variable : {"XDG_DATA_HOME", "XDG_STATE_HOME", "XDG_CACHE_HOME"})
+      ::setenv(variable, (path / variable).c_str(), 1);
+    ::setenv("USER", "okafor", 1);
+  }
+  ~Home() {
+    std::error_code failed;
+    fs::remove_all(path, failed);
+  }
+  Home(const Home&) = delete;
+  Home& operator=(const Home&) = delete;
+
+  fs::path path;
+};
+
+work::Session logging_to(const fs::path& log) {
+  work::Session session;
+  session.log_file = log.string();
+  return session;
+}
+
+work::Session with_plugins_of(const fs::path& folder) {
+  work::Session session;
+  session.plugin_folders = {folder.string()};
+  return session;
+}
+
+void rest(Desk& desk) {
+  using namespace std::chrono_literals;
+  const auto until = std::chrono::steady_clock::now() + 120s;
+  desk.update();
+  while (desk.working() && std::chrono::steady_clock::now() < until) {
+    std::this_thread::sleep_for(5ms);
+    desk.update();
+  }
+  desk.update();
+}
+
+void ask(Desk& desk, const Intent& intent) {
+  desk.handle(intent);
+  rest(desk);
+}
+
+void open(Desk& desk, const std::string& tank) {
+  rest(desk);
+  const auto& tanks = desk.view().line.tanks;
+  const auto found = std::ranges::find(tanks, tank, &TankOnLine::name);
+  REQUIRE(found != tanks.end());
+  ask(desk, OpenTank{static_cast<int>(found - tanks.begin())});
+}
+
+/// baths/readings/n-07-morning.toml as it is typed.
+void type_the_readings(Desk& desk) {
+  open(desk, "N-07");
+  REQUIRE(desk.view().readings.rows.size() == 3);
+  for (const auto& [row, field, text] :
+       std::initializer_list<std::tuple<int, Field, const char*>>{{-1, Field::volume, "3 cm"},
+                                                                  {-1, Field::temperature, "54"},
+                                                                  {-1, Field::pH, "4.1"},
+                                                                  {0, Field::titrant, "0.1012"},
+                                                                  {0, Field::burette, "23.80"},
+                                                                  {1, Field::titrant, "0.0998"},
+                                                                  {1, Field::burette, "8.10"},
+                                                                  {2, Field::titrant, "0.1005"},
+                                                                  {2, Field::burette, "11.90"}})
+    desk.handle(TypeReading{row, field, text});
+  rest(desk);
+  REQUIRE(desk.view().readings.faults.empty());
+}
+
+SetUnit choice(const std::string& what, const std::string& unit) {
+  const auto& all = unit_choices();
+  const auto which = std::ranges::find(all, what, &UnitChoice::what);
+  REQUIRE(which != all.end());
+  const auto chosen = std::ranges::find(which->all, unit);
+  REQUIRE(chosen != which->all.end());
+  return {static_cast<int>(which - all.begin()), static_cast<int>(chosen - which->all.begin())};
+}
+
+}  // namespace
+
+TEST_CASE("every page's figures are in the chosen units", "[desktop]") {
+  const Home home;
+  Desk desk({}, PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  const std::string in_kg = desk.view().additions.steps.back().what;
+  const auto boric_acid = [&] { return desk.view().state.rows[2]; };
+  CHECK(boric_acid().unit == "g/L");
+  CHECK(boric_acid().found == "37.0");
+
+  ask(desk, choice("concentrations", "mol/L"));
+  constexpr double g_per_mol = 61.83;
+  CHECK(boric_acid().unit == "mol/L");
+  CHECK(std::stod(boric_acid().found) == Approx(36.97 / g_per_mol).epsilon(2e-3));
+  CHECK(desk.view().readings.rows[2].result.ends_with("mol/L"));
+  CHECK(desk.view().state.rows[3].found == "4.10");  // a pH has no unit
+
+  ask(desk, choice("concentrations", "% w/w"));
+  CHECK(boric_acid().unit == "% w/w");
+  CHECK(std::stod(boric_acid().found) == Approx(36.97 / 11.75).epsilon(5e-3));  // 1.175 kg/L stands beside it
+
+  ask(desk, choice("concentrations", "N"));
+  CHECK(boric_acid().unit == "g/L");  // no equivalents
+  CHECK(desk.view().readings.rows[0].result.ends_with("N (2 eq/mol)"));
+
+  ask(desk, choice("masses", "lb"));
+  ask(desk, choice("densities", "°Bé"));
+  CHECK(desk.view().additions.steps.back().what != in_kg);
+  CHECK(desk.view().additions.additions.back().unit == "lb");
+  CHECK(desk.view().chemistry.figures.back().second.ends_with("°Bé"));
+  const double planned = desk.view().additions.additions.back().amount;
+  const int last = static_cast<int>(desk.view().additions.additions.size()) - 1;
+  ask(desk, DragAmount{last, 2 * planned});  // in pounds, as it is shown
+  CHECK(desk.view().additions.additions.back().amount == Approx(2 * planned));
+}
+
+TEST_CASE("what is printed is shown and sent to the print command", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  ask(desk, ShowPrinted{});
+  CHECK_FALSE(desk.view().printed.open);  // nothing is there
+  ask(desk, IssueSlip{});
+  REQUIRE(desk.view().slip.number > 0);
+  ask(desk, ShowPrinted{});
+  CHECK(desk.view().printed.open);
+  REQUIRE_FALSE(desk.view().printed.sheets.empty());
+  const sheets::Picture& sheet = *desk.view().printed.sheets.front();
+  CHECK(sheet.rgba.size() == 4U * static_cast<std::size_t>(sheet.width * sheet.height));
+  CHECK(static_cast<double>(sheet.height) / sheet.width == Approx(297.0 / 210).epsilon(2e-3));
+
+  ask(desk, SetPrintCommand{"cp {file} " + (home.path / "paper.pdf").string()});
+  ask(desk, PrintSheet{});
+  CHECK(desk.view().printed.fault.empty());
+  CHECK_FALSE(desk.view().printed.said.empty());
+  CHECK(fs::file_size(home.path / "paper.pdf") == fs::file_size(desk.view().printed.file));
+  ask(desk, SetPrintCommand{"no-such-printer"});
+  ask(desk, PrintSheet{});
+  CHECK(desk.view().printed.said.empty());
+  CHECK(desk.view().printed.fault.find("could not be started") != std::string::npos);
+  ask(desk, ClosePrinted{});
+  CHECK_FALSE(desk.view().printed.open);
+
+  const fs::path charts = home.path / "path.svg";
+  ask(desk, SaveCharts{Charts::path, charts.string()});
+  CHECK(fs::file_size(charts) > 1000);
+}
+
+TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  open(desk, "AL-1");
+  ask(desk, GoTo{PageName::forecast});
+  REQUIRE(desk.view().forecast.may_print);
+  ask(desk, MoveLever{0, 50});
+  ask(desk, PrintForecast{});
+  CHECK(desk.view().printed.open);
+  CHECK(desk.view().printed.file == (home.path / "printed/forecast-al-1.pdf").string());
+  CHECK(fs::file_size(desk.view().printed.file) > 10000);
+  CHECK_FALSE(desk.view().printed.sheets.empty());
+  ask(desk, GoTo{PageName::log});
+  CHECK_FALSE(desk.view().printed.open);
+}
+
+TEST_CASE("a plugin is looked at, allowed and withdrawn at the window", "[desktop]") {
+  const Home home;
+  const fs::path mine = home.path / "mine", file = mine / "sound.bathtype.so";
+  fs::create_directories(mine);
+  fs::copy_file(fs::path(TEST_PLUGINS) / "sound.bathtype.so", file);
+  Desk desk(with_plugins_of(mine), PROJECT_DIR "/baths", [] {});
+  ask(desk, GoTo{PageName::bath_types});
+  const auto row = [&] {
+    const auto& rows = desk.view().bath_types.rows;
+    const auto found = std::ranges::find(rows, file.string(), &BathTypeRow::file);
+    REQUIRE(found != rows.end());
+    return *found;
+  };
+  REQUIRE(row().may_be_allowed);
+  REQUIRE_FALSE(row().may_be_withdrawn);
+  const std::string sha256 = row().sha256;
+  ask(desk, AllowPlugin{sha256});  // nobody has looked at it
+  CHECK(row().may_be_allowed);
+
+  ask(desk, ExaminePlugin{file.string()});
+  REQUIRE(desk.view().bath_types.examined);
+  CHECK(desk.view().bath_types.examined->sha256 == sha256);
+  CHECK(desk.view().bath_types.examined->faults.empty());
+  ask(desk, AllowPlugin{std::string(64, '0')});
+  CHECK(row().may_be_allowed);
+  ask(desk, AllowPlugin{sha256});
+  CHECK(row().state == "ready");
+  CHECK(row().may_be_withdrawn);
+  CHECK_FALSE(desk.view().bath_types.examined);
+
+  ask(desk, WithdrawPlugin{sha256});
+  CHECK(row().state == "not allowed yet");
+}
+
+TEST_CASE("a plugin with a fault is shown with it and cannot be allowed", "[failure][desktop]") {
+  const Home home;
+  const fs::path mine = home.path / "mine", file = mine / "prints.bathtype.so";
+  fs::create_directories(mine);
+  fs::copy_file(fs::path(TEST_PLUGINS) / "prints.bathtype.so", file);
+  Desk desk(with_plugins_of(mine), PROJECT_DIR "/baths", [] {});
+  ask(desk, ExaminePlugin{file.string()});
+  REQUIRE(desk.view().bath_types.examined);
+  CHECK_FALSE(desk.view().bath_types.examined->faults.empty());
+  ask(desk, AllowPlugin{desk.view().bath_types.examined->sha256});
+  CHECK_FALSE(desk.view().fault.empty());
+  CHECK_FALSE(fs::exists(home.path / "XDG_DATA_HOME/bathwright/plugins.allow.toml"));
+}
+
+TEST_CASE("only who may signs that somebody left", "[desktop]") {
+  const Home home;
+  Desk desk({}, PROJECT_DIR "/baths", [] {});
+  const Names chemist{"A. Chemist", "246824", "", ""}, hand{"M. Okafor", "135713", "", ""};
+  ask(desk, AdmitPerson{"A. Chemist", "chemist", "246824", chemist});
+  ask(desk, AdmitPerson{"M. Okafor", "operator", "135713", chemist});
+  INFO(desk.view().fault << desk.view().sign.said);
+  REQUIRE(desk.view().people.size() == 2);
+  ask(desk, RetirePerson{"A. Chemist", hand});
+  CHECK_FALSE(desk.view().fault.empty());
+  CHECK(desk.view().people[0].active);
+  ask(desk, RetirePerson{"M. Okafor", chemist});
+  const auto left = std::ranges::find(desk.view().people, "M. Okafor", &PersonRow::name);
+  REQUIRE(left != desk.view().people.end());
+  CHECK_FALSE(left->active);
+  CHECK(left->signs == "no more");
+  CHECK(std::ranges::count(desk.view().sign.people, "M. Okafor") == 0);
+}
