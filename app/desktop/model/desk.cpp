@@ -148,7 +148,7 @@ void Desk::handle(const Intent& intent) {
   changed_ = true;
   std::visit(Overloaded{[&](const GoTo& to) {
                           view_.page = to.page;
-                          shows_printed_ = false;
+                          close_printed();
                           fault_.clear();
                           said_.clear();
                           if (to.page == PageName::forecast && !forecasted_) ask_forecast();
@@ -160,6 +160,7 @@ void Desk::handle(const Intent& intent) {
                         },
                         [&](const OpenTank& open) {
                           fault_.clear();
+                          close_printed();
                           if (open.tank != open_) open_tank(open.tank);
                         },
                         [&](const TypeReading& typed) {
@@ -244,10 +245,7 @@ void Desk::handle(const Intent& intent) {
                         [&](const SaveCharts& asked) { save(asked); },
                         [&](const PrintForecast&) { print_forecast(); },
                         [&](const ShowPrinted&) { show_printed(); },
-                        [&](const ClosePrinted&) {
-                          shows_printed_ = false;
-                          preview_.reset();
-                        },
+                        [&](const ClosePrinted&) { close_printed(); },
                         [&](const PrintSheet&) { print_sheet(); },
                         [&](const SetPrintCommand& asked) {
                           settings_.print_command = asked.command;
@@ -546,6 +544,11 @@ void Desk::show_printed() {
   print_said_.clear();
   print_fault_.clear();
   preview_job_.ask(printed_sheet_);
+}
+
+void Desk::close_printed() {
+  shows_printed_ = false;
+  preview_.reset();
 }
 
 void Desk::print_sheet() {

@@ -59,6 +59,7 @@ class Desk {
   void save(const SaveCharts& save);
   void print_forecast();
   void show_printed();
+  void close_printed();
   void print_sheet();
   /// Where slips and hand-overs go as PDF: beside the log.
   [[nodiscard]] std::filesystem::path printed() const;

@@ -109,6 +109,21 @@ LevelUnit unit_of(const sheets::Judged& judged, const bath::BathType& type, cons
   return quantity ? units.level(*quantity, in) : LevelUnit{judged.unit, 1};
 }
 
+/// "nickel 70.2, boric acid 42.0 g/L, pH 4.20": a unit stands after the last level that has it.
+std::string levels_after(const dosing::Step& step, const bath::Tank& tank, const bath::BathType& type,
+                         const Units& units) {
+  std::string text, unit_before;
+  for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH)) {
+    const LevelUnit unit = unit_of(judged, type, &step.predicted, units);
+    const double level = unit.of(judged.found);
+    if (!unit_before.empty() && unit.symbol != unit_before) text += " " + unit_before;
+    text += (text.empty() ? "" : ", ") + judged.label + " " +
+            fixed(level, judged.unit.empty() ? 2 : decimals_of(level));
+    unit_before = unit.symbol;
+  }
+  return unit_before.empty() ? text : text + " " + unit_before;
+}
+
 /// A chart of levels, volumes or masses in the units that are shown.
 void convert(charts::Chart& chart, const bath::BathType* type, const Units& units) {
   LevelUnit unit{chart.unit, 1};
@@ -285,12 +300,7 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     row.what = units.amount(step.amount, step.unit) + " " + step.name;
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
-    for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH)) {
-      const LevelUnit unit = unit_of(judged, type, &step.predicted, units);
-      const double level = unit.of(judged.found);
-      row.then += judged.label + " " + fixed(level, judged.unit.empty() ? 2 : decimals_of(level)) + ", ";
-    }
-    row.then += units.volume(step.predicted.volume_L);
+    row.then = levels_after(step, tank, type, units) + ", " + units.volume(step.predicted.volume_L);
     if (step.wait_h > 0) row.wait = "wait " + sheets::waiting(step.wait_h) + ", stirred";
     for (const dosing::Check& check : step.checks) {
       if (check.ok || (!check.stops && !told.insert(check.name).second)) continue;

@@ -83,8 +83,8 @@ void draw_bath_types(const BathTypesView& view, PanelState& state, const Look& l
   title(look, "Bath types");
   quiet(
       look,
-      "One plugin file each, compiled or in TOML. What did not come with the program runs only once it is allowed, by "
-      "the hash of its file.");
+      "One file each. A compiled one that did not come with the program runs only once it is allowed, by the hash of "
+      "its file.");
   if (view.working) quiet(look, "looking ...");
   if (view.examined) draw_examined(*view.examined, state, look, out);
   for (const BathTypeRow& row : view.rows)

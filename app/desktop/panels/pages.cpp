@@ -41,6 +41,7 @@ void draw_leaving(const DeskView& view, PanelState& state, const Look& look, Int
   if (button(look, "Retire", !view.sign.busy && !names.pin.empty())) {
     out.emplace_back(RetirePerson{state.leaving, names});
     state.leaving.clear();
+    state.signer = {};  // the list of those who sign gets shorter
   }
   ImGui::SameLine();
   if (button(look, "Keep")) state.leaving.clear();

@@ -125,6 +125,8 @@ TEST_CASE("every page's figures are in the chosen units", "[desktop]") {
   ask(desk, choice("concentrations", "N"));
   CHECK(boric_acid().unit == "g/L");  // no equivalents
   CHECK(desk.view().readings.rows[0].result.ends_with("N (2 eq/mol)"));
+  CHECK(desk.view().additions.steps.back().then.find("boric acid 42.0 g/L, pH 4.20, 2400 L") !=
+        std::string::npos);
 
   ask(desk, choice("masses", "lb"));
   ask(desk, choice("densities", "°Bé"));
