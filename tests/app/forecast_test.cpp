@@ -28,6 +28,12 @@ TEST_CASE("a forecast says when each limit is met, and keeps its balance", "[uni
   CHECK(aluminium);
   CHECK_FALSE(doc.at("bleed_to_hold").empty());
   CHECK(bench.read("days.svg").find("<svg") != std::string::npos);
+  REQUIRE(bench.run(files + "--samples 0 --pdf days.pdf --paper letter --html days.html").status == 1);
+  CHECK(bench.read("days.pdf").starts_with("%PDF-"));
+  const std::string html = bench.read("days.html");
+  for (const char* part :
+       {"Limits met", "aluminium above", "Cost and waste, a day", "<svg", "licensed practice decide"})
+    CHECK(html.find(part) != std::string::npos);
   CHECK(doc.at("series").size() == 121);
   for (const auto& [what, residual] : doc.at("balance").items()) {
     INFO(what);
