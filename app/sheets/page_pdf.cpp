@@ -2,6 +2,7 @@
 
 #include <bathwright/sheets/page_pdf.hpp>
 
+#include <array>
 #include <cmath>
 #include <cstring>
 
@@ -140,20 +141,26 @@ Result<std::string> pdf_of(const Page& page, Paper paper) {
 
 namespace {
 
-/// Cairo's dots are whole numbers, 0x00RRGGBB.
+constexpr int fine = 2;  // cairo puts letters on whole dots: drawn finer, their spacing is that of the paper
+
+/// Each dot the mean of fine x fine of the surface, whose dots are whole numbers, 0x00RRGGBB.
 Picture picture_of(cairo_surface_t* surface) {
   cairo_surface_flush(surface);
-  Picture picture{cairo_image_surface_get_width(surface), cairo_image_surface_get_height(surface), {}};
+  Picture picture{
+      cairo_image_surface_get_width(surface) / fine, cairo_image_surface_get_height(surface) / fine, {}};
   const unsigned char* data = cairo_image_surface_get_data(surface);
-  const auto stride = static_cast<std::size_t>(cairo_image_surface_get_stride(surface));
+  const int stride = cairo_image_surface_get_stride(surface);
   picture.rgba.reserve(4 * static_cast<std::size_t>(picture.width) *
                        static_cast<std::size_t>(picture.height));
-  for (std::size_t y = 0; y < static_cast<std::size_t>(picture.height); ++y)
-    for (std::size_t x = 0; x < static_cast<std::size_t>(picture.width); ++x) {
-      std::uint32_t dot = 0;
-      std::memcpy(&dot, data + y * stride + 4 * x, sizeof dot);
-      for (const unsigned shift : {16U, 8U, 0U})
-        picture.rgba.push_back(static_cast<std::uint8_t>(dot >> shift & 0xFFU));
+  for (int y = 0; y < picture.height; ++y)
+    for (int x = 0; x < picture.width; ++x) {
+      std::array<unsigned, 3> sum{};
+      for (int i = 0; i < fine * fine; ++i) {
+        std::uint32_t dot = 0;
+        std::memcpy(&dot, data + (fine * y + i / fine) * stride + 4 * (fine * x + i % fine), sizeof dot);
+        for (unsigned c = 0; c < sum.size(); ++c) sum[c] += dot >> (16 - 8 * c) & 0xFFU;
+      }
+      for (const unsigned one : sum) picture.rgba.push_back(static_cast<std::uint8_t>(one / (fine * fine)));
       picture.rgba.push_back(0xFF);
     }
   return picture;
@@ -165,17 +172,17 @@ Result<std::vector<Picture>> pictures_of(const Page& page, Paper paper, double d
   constexpr double points_an_inch = 72;
   const Measures sheet(paper);
   const double scale = dots_per_inch / points_an_inch;
+  const auto dots = [&](double points) { return fine * static_cast<int>(std::lround(scale * points)); };
   const SurfaceOwner nowhere(cairo_pdf_surface_create_for_stream(nullptr, nullptr, sheet.across, sheet.down));
   const Ink measuring(nowhere.get());
   const Document document(page, measuring, sheet.area());
   const Flow flow = document.laid_out();
   std::vector<Picture> pictures;
   for (std::size_t p = 0; p < flow.pages(); ++p) {
-    const SurfaceOwner surface(cairo_image_surface_create(CAIRO_FORMAT_RGB24,
-                                                          static_cast<int>(std::lround(scale * sheet.across)),
-                                                          static_cast<int>(std::lround(scale * sheet.down))));
+    const SurfaceOwner surface(
+        cairo_image_surface_create(CAIRO_FORMAT_RGB24, dots(sheet.across), dots(sheet.down)));
     {
-      Ink ink(surface.get(), scale);
+      Ink ink(surface.get(), fine * scale);
       ink.full_square(0, 0, std::max(sheet.across, sheet.down), pdf::colours.card);
       document.draw(flow, p, ink);
     }

@@ -1,5 +1,7 @@
 #include "bath_types_work.hpp"
 
+#include <algorithm>
+
 #include "work/shop.hpp"
 
 namespace bathwright::desktop {
@@ -29,6 +31,9 @@ void read_bath_types(const BathTypesQuestion& question, const std::function<void
   const auto allowed = work::allowed_plugins(question.session);
   for (const auto& listed : types.list())
     answer.rows.push_back(row_of(listed, allowed ? &*allowed : nullptr));
+  // What a person may decide stands first, under the question about it.
+  std::ranges::stable_partition(
+      answer.rows, [](const BathTypeRow& row) { return row.may_be_allowed || row.may_be_withdrawn; });
   give(answer);
   if (question.examine.empty()) return;
   answer.examination =

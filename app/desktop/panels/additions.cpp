@@ -23,7 +23,7 @@ void draw_amounts(const AdditionsView& view, const Look& look, Intents& out) {
     note_place(look, "amount " + row.chemical);
     ImGui::SameLine();
     ImGui::TextUnformatted(row.unit.c_str());
-    ImGui::SameLine(look.px(120));
+    ImGui::SameLine(look.px(148));  // beside the longest unit, "imp gal"
     ImGui::SetNextItemWidth(-1);
     if (ImGui::SliderScalar("##amount", ImGuiDataType_Double, &amount, &least, &row.largest, "",
                             ImGuiSliderFlags_NoInput))  // the field beside it is for typing

@@ -36,7 +36,7 @@ void draw_withdrawing(const BathTypeRow& row, PanelState& state, const Look& loo
   draw_facts({{"bath type", row.id}, {"file", row.file}, {"SHA-256", row.sha256}}, look);
   said(
       look, look.palette.ink,
-      "It runs no more. A tank that is open keeps it until the program ends; its tanks cannot be opened after that.");
+      "It runs no more: its tanks cannot be opened any more. One that is open keeps it until the program ends.");
   if (button(look, "Withdraw trust")) {
     out.emplace_back(WithdrawPlugin{row.sha256});
     state.withdrawn_plugin.clear();

@@ -102,7 +102,7 @@ bool button(const Look& look, const char* label, bool ready) {
 
 void copies(const Look& look, const char* what, const std::function<std::string()>& text) {
   ImGui::PushID(what);
-  if (ImGui::SmallButton("Copy the figures")) ImGui::SetClipboardText(text().c_str());
+  if (button(look, "Copy the figures")) ImGui::SetClipboardText(text().c_str());
   note_place(look, std::string("copy ") + what);
   if (ImGui::IsItemHovered()) ImGui::SetTooltip("as rows for a spreadsheet");
   ImGui::PopID();

@@ -57,7 +57,7 @@ void note_window(const Look& look, const std::string& name);
 /// A button; false while it is not ready, whatever fires it.
 bool button(const Look& look, const char* label, bool ready = true);
 
-/// A small button that puts a text on the clipboard.
+/// A button that puts a text on the clipboard.
 void copies(const Look& look, const char* what, const std::function<std::string()>& text);
 
 /// The one thing to do next: a button in the accent.

@@ -201,6 +201,7 @@ TEST_CASE("a plugin is looked at, allowed and withdrawn at the window", "[deskto
     return *found;
   };
   REQUIRE(row().may_be_allowed);
+  CHECK(desk.view().bath_types.rows.front().file == file.string());  // what is to be decided stands first
   REQUIRE_FALSE(row().may_be_withdrawn);
   const std::string sha256 = row().sha256;
   ask(desk, AllowPlugin{sha256});  // nobody has looked at it
