@@ -4,8 +4,11 @@ namespace bathwright::desktop {
 namespace {
 
 constexpr float pages_high = 40, rail = 190, strip = 70, status = 24, chemistry = 330;
-constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoDecoration | ImGuiWindowFlags_NoMove |
-                                   ImGuiWindowFlags_NoBringToFrontOnFocus | ImGuiWindowFlags_NoSavedSettings;
+// The window is cleared in the colour of the cards: on a software renderer a ground that covers all of it is
+// dear.
+constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoBackground | ImGuiWindowFlags_NoDecoration |
+                                   ImGuiWindowFlags_NoMove | ImGuiWindowFlags_NoBringToFrontOnFocus |
+                                   ImGuiWindowFlags_NoSavedSettings;
 
 /// The pages as words; the one that is open is underlined.
 void draw_pages(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
@@ -85,7 +88,7 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {look.px(8), look.px(4)});
     if (state.go_to_part && state.part == part) ImGui::SetKeyboardFocusHere();
     draw();
-    if (part && focus_lost()) lost = part;
+    if (part && focus_lost(state)) lost = part;
     ImGui::PopStyleVar();
     ImGui::EndChild();
     ImGui::PopStyleVar();
@@ -96,6 +99,9 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
       draw_first_start(view, state, look, out);
     });
   } else {
+    ImDrawList& ground = *ImGui::GetWindowDrawList();
+    ground.AddRectFilled({0, 0}, {all.x, look.px(pages_high)}, packed(look.palette.page));
+    ground.AddRectFilled({0, all.y - look.px(status)}, all, packed(look.palette.page));
     draw_pages(view, state, look, out);
     const bool with_chemistry = view.page == PageName::shift;
     const float top = look.px(pages_high), body = all.y - top - look.px(strip + status), left = look.px(rail),
