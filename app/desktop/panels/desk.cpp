@@ -1,15 +1,33 @@
+#include <algorithm>
+
 #include "panels.hpp"
 
 namespace bathwright::desktop {
 namespace {
 
 constexpr float pages_high = 40, rail = 190, strip = 70, status = 24, chemistry = 330;
-constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoDecoration | ImGuiWindowFlags_NoMove |
-                                   ImGuiWindowFlags_NoBringToFrontOnFocus | ImGuiWindowFlags_NoSavedSettings;
+/// Large letters in a small window: a narrow line, no time line, the chemistry below the page.
+constexpr float cramped = 900, cramped_rail = 130, cramped_strip = 36;
+bool is_cramped(const Look& look) { return ImGui::GetIO().DisplaySize.x < look.px(cramped); }
+
+/// One line that ends at the window's edge; the whole of it under the pointer.
+void status_line(const std::string& words, charts::Colour c) {
+  ImGui::PushStyleColor(ImGuiCol_Text, colour(c));
+  ImGui::TextUnformatted(words.c_str(), words.c_str() + std::min(words.find('\n'), words.size()));
+  ImGui::PopStyleColor();
+  if (ImGui::IsItemHovered() && ImGui::GetItemRectMax().x > ImGui::GetIO().DisplaySize.x)
+    ImGui::SetTooltip("%s", words.c_str());
+}
+
+// The window is cleared in the colour of the cards: on a software renderer a ground that covers all of it is
+// dear.
+constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoBackground | ImGuiWindowFlags_NoDecoration |
+                                   ImGuiWindowFlags_NoMove | ImGuiWindowFlags_NoBringToFrontOnFocus |
+                                   ImGuiWindowFlags_NoSavedSettings;
 
 /// The pages as words; the one that is open is underlined.
 void draw_pages(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
-  ImGui::SetCursorPos({look.px(rail), look.px(6)});
+  ImGui::SetCursorPos({look.px(is_cramped(look) ? 4 : rail), look.px(6)});
   if (state.go_to_part && state.part == Part::pages) ImGui::SetKeyboardFocusHere();
   for (const auto& [page, words] : pages) {
     const bool open = page == view.page;
@@ -25,8 +43,8 @@ void draw_pages(const DeskView& view, PanelState& state, const Look& look, Inten
                                                 packed(look.palette.accent));
     ImGui::SameLine(0, look.px(4));
   }
-  ImGui::SetCursorPosX(ImGui::GetWindowWidth() - look.px(80));
-  if (button(look, "F1 keys")) state.key_list = true;
+  ImGui::SetCursorPosX(ImGui::GetWindowWidth() - look.px(is_cramped(look) ? 44 : 80));
+  if (button(look, is_cramped(look) ? "F1" : "F1 keys")) state.key_list = true;
 }
 
 void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
@@ -84,7 +102,7 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     ImGui::PushStyleVar(ImGuiStyleVar_ItemSpacing, {look.px(8), look.px(4)});
     if (state.go_to_part && state.part == part) ImGui::SetKeyboardFocusHere();
     draw();
-    if (part && focus_lost()) lost = part;
+    if (part && focus_lost(state)) lost = part;
     ImGui::PopStyleVar();
     ImGui::EndChild();
     ImGui::PopStyleVar();
@@ -95,28 +113,37 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
       draw_first_start(view, state, look, out);
     });
   } else {
+    ImDrawList& ground = *ImGui::GetWindowDrawList();
+    ground.AddRectFilled({0, 0}, {all.x, look.px(pages_high)}, packed(look.palette.page));
+    ground.AddRectFilled({0, all.y - look.px(status)}, all, packed(look.palette.page));
     draw_pages(view, state, look, out);
-    const bool with_chemistry = view.page == PageName::shift;
-    const float top = look.px(pages_high), body = all.y - top - look.px(strip + status), left = look.px(rail),
-                right = with_chemistry ? look.px(chemistry) : 0;
+    const bool narrow = is_cramped(look), with_chemistry = view.page == PageName::shift;
+    const float foot = narrow ? cramped_strip : strip, top = look.px(pages_high),
+                body = all.y - top - look.px(foot + status), left = look.px(narrow ? cramped_rail : rail),
+                right = with_chemistry && !narrow ? look.px(chemistry) : 0;
     ImGui::SetCursorPos({0, top});
     panel("line", {left, body}, Part::line, [&] { draw_line(view.line, look, out); });
     ImGui::SameLine(0, 0);
-    panel("page", {all.x - left - right, body}, Part::page, [&] { draw_page(view, state, look, out); });
-    if (with_chemistry) {
+    panel("page", {all.x - left - right, body}, Part::page, [&] {
+      draw_page(view, state, look, out);
+      if (with_chemistry && narrow) draw_chemistry(view.chemistry, view.source, look, out);
+    });
+    if (with_chemistry && !narrow) {
       ImGui::SameLine(0, 0);
       panel("chemistry", {right, body}, Part::chemistry,
             [&] { draw_chemistry(view.chemistry, view.source, state, look, out); });
     }
-    panel("shift", {all.x, look.px(strip)}, {}, [&] { draw_shift(view.shift, look, out); });
+    panel("shift", {all.x, look.px(foot)}, {}, [&] { draw_shift(view.shift, look, out); });
     ImGui::SetCursorPosX(look.px(12));
     const std::string words = view.status.log + "     " + view.status.renderer + "     " + view.status.doing;
+    ImGui::PushFont(look.fonts.caption);
     if (!view.fault.empty())
-      said(look, look.palette.stop, view.fault.substr(0, view.fault.find('\n')));
+      status_line(view.fault, look.palette.stop);
     else if (!view.status.said.empty())
-      said(look, look.palette.accent, view.status.said);
+      status_line(view.status.said, look.palette.accent);
     else
-      quiet(look, words);
+      status_line(words, look.palette.quiet);
+    ImGui::PopFont();
   }
   state.go_to_part = lost.has_value();
   state.part = lost.value_or(state.part);

@@ -66,8 +66,9 @@ void draw_forecast(const ForecastView& view, const PrintedView& printed, const s
     said(look, look.palette.ink, view.empty);
     return;
   }
-  const float side = look.px(380);
-  ImGui::BeginChild("levers", {side, 0}, false, ImGuiWindowFlags_NavFlattened);
+  const bool stacked = ImGui::GetContentRegionAvail().x < look.px(700);
+  const float side = stacked ? 0 : look.px(380), half = stacked ? ImGui::GetContentRegionAvail().y / 2 : 0;
+  ImGui::BeginChild("levers", {side, half}, false, ImGuiWindowFlags_NavFlattened);
   quiet(look, view.from);
   ImGui::AlignTextToFramePadding();
   ImGui::TextUnformatted("policy");
@@ -110,7 +111,7 @@ void draw_forecast(const ForecastView& view, const PrintedView& printed, const s
   draw_show_printed(printed, look, out);
   for (const std::string& note : view.notes) quiet(look, note);
   ImGui::EndChild();
-  ImGui::SameLine(0, look.px(16));
+  if (!stacked) ImGui::SameLine(0, look.px(16));
   ImGui::BeginChild("charts", {0, 0}, false, ImGuiWindowFlags_NavFlattened);
   if (view.charts.empty()) quiet(look, view.working ? "working out ..." : "nothing to show yet");
   draw_charts(view, look);

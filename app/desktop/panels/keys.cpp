@@ -47,9 +47,13 @@ void keys(const DeskView& view, PanelState& state, Intents& out) {
   if (!io.WantTextInput && pressed(ImGuiKey_Z, false)) out.emplace_back(UndoTyping{});
 }
 
-bool focus_lost() {
+bool focus_lost(PanelState& state) {
+  if (!ImGui::IsWindowFocused()) return false;
   const ImGuiContext& now = *ImGui::GetCurrentContext();
-  return ImGui::IsWindowFocused() && now.IO.NavVisible && now.NavId != 0 && !now.NavIdIsAlive;
+  const bool seen = !now.IO.NavVisible || now.NavIdIsAlive;
+  // What a click has just given the focus counts as drawn from the next picture on: lost is lost in two.
+  const unsigned before = std::exchange(state.not_drawn, seen ? 0 : now.NavId);
+  return state.not_drawn != 0 && state.not_drawn == before;
 }
 
 void draw_key_list(PanelState& state, const Look& look) {

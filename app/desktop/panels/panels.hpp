@@ -42,6 +42,7 @@ struct PanelState {
   std::int64_t slip = 0;  ///< `slip`: the one that was open when last drawn
   Part part = Part::pages;
   bool go_to_part = false, key_list = false;
+  unsigned not_drawn = 0;  ///< ImGui's id of what has the focus and was not drawn in the last picture
   std::optional<PageName> awaited;  ///< asked for with the keys: the focus goes there once it is drawn
   std::string agreed_plugin, withdrawn_plugin;  ///< SHA-256 of what is being decided
   std::string leaving;                          ///< who is to be retired
@@ -86,7 +87,7 @@ void draw_first_start(const DeskView& view, PanelState& state, const Look& look,
 void keys(const DeskView& view, PanelState& state, Intents& out);
 void draw_key_list(PanelState& state, const Look& look);
 /// The thing of this part that had the focus is not drawn any more.
-[[nodiscard]] bool focus_lost();
+[[nodiscard]] bool focus_lost(PanelState& state);
 /// Around the last item, where the focus would not be seen.
 void ring(const Look& look);
 /// A button where there is a printed sheet; the sheet itself in the place of a page.

@@ -17,12 +17,12 @@ class ReadingsPanel {
   void draw() {
     sample();
     if (ImGui::BeginTable("burettes", 6, ImGuiTableFlags_SizingStretchProp | ImGuiTableFlags_BordersInnerH)) {
-      for (const auto& [name, weight] : {std::pair{"what", 1.1F},
-                                         {"method", 1.8F},
-                                         {"sample, mL", 0.9F},
-                                         {"titrant, mol/L", 1.2F},
-                                         {"burette, mL", 1.0F},
-                                         {"is", 1.8F}})
+      for (const auto& [name, weight] : {std::pair{"what", 0.8F},
+                                         {"method", 1.9F},
+                                         {"sample, mL", 1.1F},
+                                         {"titrant, mol/L", 1.3F},
+                                         {"burette, mL", 1.1F},
+                                         {"is", 1.6F}})
         ImGui::TableSetupColumn(name, 0, weight);
       ImGui::PushFont(look_.fonts.caption);
       ImGui::TableHeadersRow();
@@ -101,6 +101,8 @@ class ReadingsPanel {
         if (ImGui::Selectable(reading.methods[m].c_str(), static_cast<int>(m) == reading.method))
           out_.emplace_back(ChooseMethod{index, static_cast<int>(m)});
       ImGui::EndCombo();
+    } else if (ImGui::IsItemHovered() && !reading.methods.empty()) {
+      ImGui::SetTooltip("%s", reading.methods[static_cast<std::size_t>(reading.method)].c_str());
     }
     ImGui::PopID();
     if (reading.is_value) {

@@ -46,23 +46,36 @@ void draw_shift(const ShiftView& view, const Look& look, Intents& out) {
     ImGui::SameLine(0, look.px(16));
     standing(look, static_cast<int>(charts::State::act), open);
   }
-  std::string due;
-  constexpr std::size_t most = 4;
-  for (std::size_t i = 0; i < view.due.size() && i < most; ++i) due += (i > 0 ? ", " : "due: ") + view.due[i];
-  if (view.due.size() > most) due += " and " + std::to_string(view.due.size() - most) + " more";
+  // As many as the line has room for.
+  std::string due = view.due.empty() ? "" : "due: ";
+  std::size_t named = 0;
+  const auto more = [&] { return " and " + std::to_string(view.due.size() - named) + " more"; };
+  ImGui::SameLine(0, look.px(16));
+  const float room = ImGui::GetContentRegionAvail().x - ImGui::CalcTextSize(more().c_str()).x;
+  for (; named < view.due.size(); ++named) {
+    const std::string longer = due + (named > 0 ? ", " : "") + view.due[named];
+    if (ImGui::CalcTextSize(longer.c_str()).x > room) break;
+    due = longer;
+  }
+  if (named == 0 && !due.empty())
+    due += std::to_string(view.due.size()) + " analyses";
+  else if (named < view.due.size())
+    due += more();
   if (!due.empty()) {
-    ImGui::SameLine(0, look.px(16));
     ImGui::PushStyleColor(ImGuiCol_Text, colour(look.palette.ink));
     ImGui::TextUnformatted(due.c_str());
     ImGui::PopStyleColor();
-    if (ImGui::IsItemHovered() && view.due.size() > most) {
+    if (ImGui::IsItemHovered() && named < view.due.size()) {
       std::string all;
       for (const std::string& one : view.due) all += one + "\n";
       ImGui::SetTooltip("%s", all.c_str());
     }
   }
+  if (due.empty()) ImGui::NewLine();
   ImGui::PopFont();
-  if (view.elapsed >= 0) draw_time_line(view, look, out);
+  constexpr float time_line = 22;
+  if (view.elapsed >= 0 && ImGui::GetContentRegionAvail().y >= look.px(time_line))
+    draw_time_line(view, look, out);
 }
 
 }  // namespace bathwright::desktop

@@ -43,9 +43,10 @@ void set_theme(const charts::Palette& p, float scale) {
   const charts::Colour hover = between(p.card, p.accent, 0.08), pressed = between(p.card, p.accent, 0.14);
   for (const ImGuiCol all : {ImGuiCol_WindowBg, ImGuiCol_MenuBarBg, ImGuiCol_TitleBg, ImGuiCol_ScrollbarBg})
     set(all, p.page);
-  for (const ImGuiCol all : {ImGuiCol_ChildBg, ImGuiCol_PopupBg, ImGuiCol_FrameBg, ImGuiCol_Button,
-                             ImGuiCol_TableRowBg, ImGuiCol_Tab})
+  for (const ImGuiCol all : {ImGuiCol_PopupBg, ImGuiCol_FrameBg, ImGuiCol_Button, ImGuiCol_Tab})
     set(all, p.card);
+  // Panels stand on the cleared window, which has the colour of cards.
+  for (const ImGuiCol all : {ImGuiCol_ChildBg, ImGuiCol_TableRowBg}) style.Colors[all] = {0, 0, 0, 0};
   for (const ImGuiCol all : {ImGuiCol_Separator, ImGuiCol_TableBorderLight, ImGuiCol_TableBorderStrong})
     set(all, p.rule);
   for (const ImGuiCol all : {ImGuiCol_Border, ImGuiCol_ScrollbarGrab}) set(all, p.edge);

@@ -75,10 +75,22 @@ const char* gl_text(unsigned name) {
   return text ? reinterpret_cast<const char*>(text) : "";
 }
 
+/// The whole picture in one colour, without the triangles of a filled rectangle.
+void clear(charts::Colour c) {
+  using ClearColour = void (*)(float, float, float, float);
+  using Clear = void (*)(unsigned);
+  constexpr unsigned gl_colour_buffer = 0x4000;
+  const ImVec4 ground = colour(c);
+  if (const auto set = reinterpret_cast<ClearColour>(glfwGetProcAddress("glClearColor")))
+    set(ground.x, ground.y, ground.z, 1);
+  if (const auto all = reinterpret_cast<Clear>(glfwGetProcAddress("glClear"))) all(gl_colour_buffer);
+}
+
 GLFWwindow* create(const Window::Wish& wish) {
   glfwWindowHint(GLFW_CONTEXT_VERSION_MAJOR, 3);
   glfwWindowHint(GLFW_CONTEXT_VERSION_MINOR, 2);
   glfwWindowHint(GLFW_OPENGL_PROFILE, GLFW_OPENGL_CORE_PROFILE);
+  for (const int unused : {GLFW_DEPTH_BITS, GLFW_STENCIL_BITS, GLFW_SAMPLES}) glfwWindowHint(unused, 0);
   return glfwCreateWindow(wish.width, wish.height, "Bathwright", nullptr, nullptr);
 }
 
@@ -170,6 +182,7 @@ bool Window::picture(const std::function<void()>& draw) {
   ImGui::NewFrame();
   draw();
   ImGui::Render();
+  clear(palette(open.dark).card);
   ImGui_ImplOpenGL3_RenderDrawData(ImGui::GetDrawData());
   glfwSwapBuffers(open.window);
   return !glfwWindowShouldClose(open.window);

@@ -124,12 +124,11 @@ TEST_CASE("every ink can be read on every ground it stands on", "[unit][desktop]
     }
   };
   constexpr double of_text = 4.5, of_signs = 3;  // WCAG 2.1, 1.4.3 and 1.4.11, level AA
-  const ImVec4 page = style[ImGuiCol_WindowBg], card = style[ImGuiCol_ChildBg],
-               popup = style[ImGuiCol_PopupBg], chosen = style[ImGuiCol_Header],
-               under_pointer = style[ImGuiCol_HeaderHovered], button = style[ImGuiCol_ButtonHovered],
-               button_down = style[ImGuiCol_ButtonActive], field = style[ImGuiCol_FrameBg],
-               field_hovered = style[ImGuiCol_FrameBgHovered], field_typed_in = style[ImGuiCol_FrameBgActive],
-               head = style[ImGuiCol_TableHeaderBg];
+  const ImVec4 page = style[ImGuiCol_WindowBg], card = colour(p.card), popup = style[ImGuiCol_PopupBg],
+               chosen = style[ImGuiCol_Header], under_pointer = style[ImGuiCol_HeaderHovered],
+               button = style[ImGuiCol_ButtonHovered], button_down = style[ImGuiCol_ButtonActive],
+               field = style[ImGuiCol_FrameBg], field_hovered = style[ImGuiCol_FrameBgHovered],
+               field_typed_in = style[ImGuiCol_FrameBgActive], head = style[ImGuiCol_TableHeaderBg];
   check("ink", p.ink,
         {page, card, popup, chosen, under_pointer, style[ImGuiCol_HeaderActive], button, button_down, field,
          field_hovered, field_typed_in, head, style[ImGuiCol_TextSelectedBg]},

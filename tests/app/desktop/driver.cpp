@@ -44,11 +44,11 @@ EmptyHome::~EmptyHome() {
   std::filesystem::remove_all(path_, failed);
 }
 
-Driver::Driver(int width, int height, float scale, const std::filesystem::path& shop)
+Driver::Driver(int width, int height, float scale, const std::filesystem::path& shop, bool dark)
     : display_(width, height), width_(width), height_(height) {
   work::Session session;
   desk_ = std::make_unique<Desk>(session, shop, desktop::Window::wake);
-  auto window = desktop::Window::open({.width = width, .height = height, .scale = scale});
+  auto window = desktop::Window::open({.width = width, .height = height, .scale = scale, .dark = dark});
   if (!window) throw std::runtime_error(text(window.problems()));
   window_ = std::make_unique<desktop::Window>(*std::move(window));
   textures_ = std::make_unique<desktop::Textures>();

@@ -37,7 +37,7 @@ struct PictureCost {
 class Driver {
  public:
   /// Throws where no window can be opened.
-  Driver(int width, int height, float scale, const std::filesystem::path& shop);
+  Driver(int width, int height, float scale, const std::filesystem::path& shop, bool dark = false);
   ~Driver();
   Driver(const Driver&) = delete;
   Driver& operator=(const Driver&) = delete;

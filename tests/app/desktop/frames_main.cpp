@@ -1,10 +1,13 @@
-// What a picture of the desktop costs with the software renderer: writes REPORT.md.
+// What a picture of the desktop costs with the software renderer, and how soon a dragged amount is seen:
+// writes REPORT.md.
 #include <sys/resource.h>
 
 #include <algorithm>
 #include <bathwright/logbook/logbook.hpp>
 #include <chrono>
+#include <cmath>
 #include <cstdio>
+#include <cstdlib>
 #include <fstream>
 #include <thread>
 
@@ -35,12 +38,48 @@ double cpu_s() {
   return seconds(used.ru_utime) + seconds(used.ru_stime);
 }
 
+double load() {
+  double one_minute = 0;
+  return getloadavg(&one_minute, 1) == 1 ? one_minute : 0;
+}
+
 std::string row(const std::string& what, const std::vector<PictureCost>& costs) {
   std::vector<double> ui, all;
   for (const PictureCost& cost : costs) ui.push_back(cost.ui_ms), all.push_back(cost.all_ms);
   char text[200];
-  std::snprintf(text, sizeof text, "| %s | %zu | %.2f | %.2f | %.1f | %.1f |\n", what.c_str(), costs.size(),
-                of(ui).median, of(ui).worst, of(all).median, of(all).worst);
+  std::snprintf(text, sizeof text, "| %s | %zu | %.2f | %.2f | %.1f | %.1f | %.1f |\n", what.c_str(),
+                costs.size(), of(ui).median, of(ui).worst, of(all).median, of(all).worst, load());
+  return text;
+}
+
+/// The kg at the end of the path chart: what it shows of the amounts.
+double end_of_path(const Driver& driver) {
+  const auto& path = driver.view().chemistry.path;
+  return path.empty() || path.front().lines.empty() ? 0 : path.front().lines.front().x.back();
+}
+
+/// 100 steps of a drag, each waited for: pictures and time until the path chart has it.
+std::string drag_told(Driver& driver) {
+  constexpr int boric_acid = 1, steps = 100;
+  constexpr double step_kg = 0.05;
+  const double from = driver.view().additions.additions[boric_acid].amount, end = end_of_path(driver);
+  std::vector<double> taken, ms;
+  for (int i = 1; i <= steps; ++i) {
+    const auto begin = std::chrono::steady_clock::now();
+    driver.desk().handle(desktop::DragAmount{boric_acid, from + i * step_kg});
+    int pictures = 0;
+    constexpr double nearly = 1e-3;  // kg
+    while (std::abs(end_of_path(driver) - (end + i * step_kg)) > nearly && pictures < 1000)
+      driver.picture(), ++pictures;
+    taken.push_back(pictures);
+    ms.push_back(std::chrono::duration<double, std::milli>(std::chrono::steady_clock::now() - begin).count());
+  }
+  char text[300];
+  std::snprintf(
+      text, sizeof text,
+      "\nFrom a dragged amount to the path chart that shows it, %d steps: %.0f pictures in the median, %.0f "
+      "at worst; %.0f ms and %.0f ms.\n",
+      steps, of(taken).median, of(taken).worst, of(ms).median, of(ms).worst);
   return text;
 }
 
@@ -94,6 +133,9 @@ std::string at_size(int width, int height) {
                 driver.desk().handle(desktop::DragAmount{1, 5 + 0.05 * i});
               }));
   driver.until([&] { return !driver.desk().working(); });
+  driver.desk().handle(desktop::BackToPlan{});
+  driver.until([&] { return !driver.desk().working(); });
+  const std::string told = drag_told(driver);
   driver.click("Log");
   driver.until([&] { return driver.view().log.rows.size() >= 500; });
   rows += row(size + ", log of 500 entries", pictures(driver, 200, [](int) {}));
@@ -110,7 +152,7 @@ std::string at_size(int width, int height) {
       text, sizeof text,
       "\nAt %s the window stood %.2f s after the start, plugins cached; at rest it took %.1f %% of a core.\n",
       size.c_str(), start_s, 100 * share);
-  return rows + text;
+  return rows + told + text;
 }
 
 }  // namespace
@@ -121,9 +163,11 @@ int main(int, char** arguments) {
       << "# What a picture of the desktop costs\n\n"
          "Written by the target `frame_table`: a real window under Xvfb, Mesa's software renderer, the demonstration\n"
          "shop of 28 tanks, a log of 500 entries. Milliseconds; `panels` is the code of the panels and the views made\n"
-         "anew, `whole` adds drawing and showing. Aims: whole 16 at 1280 x 800 in the median, panels 4.\n\n";
+         "anew, `whole` adds drawing and showing. Aims: whole 16 at 1280 x 800 in the median, panels 4. `load` is the\n"
+         "machine's of the last minute: what else ran on its two cores.\n\n";
   constexpr const char* head =
-      "| what | pictures | panels, median | panels, worst | whole, median | whole, worst |\n|---|---|---|---|---|---|\n";
+      "| what | pictures | panels, median | panels, worst | whole, median | whole, worst | load |\n"
+      "|---|---|---|---|---|---|---|\n";
   report << head << at_size(1280, 800) << '\n' << head << at_size(1920, 1080);
   return report.good() ? 0 : 1;
 }

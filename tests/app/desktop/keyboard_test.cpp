@@ -101,9 +101,10 @@ TEST_CASE("a shift's work with the keys alone", "[desktop][window]") {
 
   press(driver, "Issue the slip");
   REQUIRE(driver.until([&] { return driver.view().slip.number > 0 && !driver.desk().working(); }));
-  driver.walk_to("signer name");
-  press(driver);
+  // The button that issued it is gone: the focus waits where the second person's name goes.
+  REQUIRE(driver.until([&] { return driver.focused() == "signer name"; }));
   driver.type("M. Roth");
+  press(driver);  // out of the field
   press(driver, "I have read it and stand for it");
   REQUIRE(driver.until([&] { return driver.view().slip.approved_by_second && !driver.desk().working(); }));
   press(driver, "step 1");

@@ -1,20 +1,78 @@
 // Pictures of every page from the real program, for the README and for eyes: PNG files in the folder given.
-//   pictures FOLDER WIDTH HEIGHT SCALE
+//   desktop_pictures FOLDER WIDTH HEIGHT SCALE [dark]
+#include <bathwright/logbook/logbook.hpp>
+#include <cmath>
 #include <cstdlib>
+#include <fstream>
+#include <string_view>
 
 #include "driver.hpp"
+#include "work/documents.hpp"
+#include "work/shift_log.hpp"
+#include "work/tank_state.hpp"
 
 using bathwright::desktop::PageName;
 using desktop_test::Driver;
 
+namespace {
+
+using namespace bathwright;
+
+/// The clock of a day that is over.
+class Earlier final : public logbook::Clock {
+ public:
+  logbook::UtcTime now{};
+  [[nodiscard]] logbook::UtcTime utc_now() const override { return now; }
+};
+
+template <class T>
+T must(Result<T> result) {
+  if (!result) throw std::runtime_error(text(result.problems()));
+  return *std::move(result);
+}
+
+/// Six weeks of analyses of the Watts tank, every second day: the nickel creeps up, the boric acid is put
+/// back on Mondays, and one pH was read from another tank.
+void log_six_weeks(const std::filesystem::path& shop, const std::filesystem::path& log_file) {
+  std::filesystem::create_directories(log_file.parent_path());
+  work::Session session;
+  session.log_file = log_file.string();
+  const work::Shop open = must(work::open_shop(session, (shop / "n-07.toml").string()));
+  const std::filesystem::path readings = shop / "then.toml";
+  Earlier clock;
+  constexpr int days = 42, every = 2, wrong_one = 26;
+  for (int day = 0; day < days; day += every) {
+    const double scatter = std::sin(2.4 * day);
+    std::ofstream file(readings);
+    file << "level_below_mark = \"2 cm\"\ntemperature = \"55 degC\"\npH = "
+         << (day == wrong_one ? 4.9 : 4.15 + 0.05 * scatter) << '\n';
+    for (const auto& [quantity, g_per_L] : {std::pair{"Ni^2+", 68 + 0.12 * day + 0.6 * scatter},
+                                            {"Cl^-", 14.6 + 0.2 * std::cos(1.7 * day)},
+                                            {"H3BO3", 42 - 0.5 * (day % 7) + 0.3 * scatter}})
+      file << "[[found]]\nquantity = \"" << quantity << "\"\nvalue = \"" << g_per_L << " g/L\"\n";
+    file.close();
+    clock.now = work::wall_clock().utc_now() - std::chrono::hours(24 * (days - day));
+    const auto found = must(work::analyse(session, open, readings.string()));
+    auto entry =
+        must(work::entry_computed(open, readings.string(), logbook::EntryKind::analysis,
+                                  work::analysis_document(open.tank, open.chemistry, found.analysis)));
+    entry.by = "okafor";
+    auto log = must(logbook::Logbook::open(log_file, logbook::OpenMode::create, clock));
+    must(log.append(std::move(entry)));
+  }
+}
+
+}  // namespace
+
 int main(int count, char** arguments) {
-  if (count != 5) return 2;
+  if (count != 5 && count != 6) return 2;
   const std::filesystem::path folder = arguments[1];
   std::filesystem::create_directories(folder);
   const desktop_test::EmptyHome home;
   std::filesystem::copy(PROJECT_DIR "/baths", home.path() / "shop", std::filesystem::copy_options::recursive);
+  log_six_weeks(home.path() / "shop", home.path() / "XDG_DATA_HOME" / "bathwright" / "shift-log.sqlite");
   Driver driver(std::atoi(arguments[2]), std::atoi(arguments[3]), static_cast<float>(std::atof(arguments[4])),
-                home.path() / "shop");
+                home.path() / "shop", count == 6);
   const auto rest = [&] { driver.until([&] { return !driver.desk().working(); }, 120); };
   driver.desk().handle(bathwright::desktop::SetShifts{"3x8", "Europe/Berlin", {}});
   rest();
