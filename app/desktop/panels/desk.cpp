@@ -126,7 +126,7 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     ImGui::SameLine(0, 0);
     panel("page", {all.x - left - right, body}, Part::page, [&] {
       draw_page(view, state, look, out);
-      if (with_chemistry && narrow) draw_chemistry(view.chemistry, view.source, look, out);
+      if (with_chemistry && narrow) draw_chemistry(view.chemistry, view.source, state, look, out);
     });
     if (with_chemistry && !narrow) {
       ImGui::SameLine(0, 0);

@@ -56,9 +56,12 @@ void draw_trends(const TrendsView& view, const std::string& tank, PanelState& st
     said(look, look.palette.ink, view.empty);
     return;
   }
-  for (const std::string& finding : view.findings)
-    standing(look, static_cast<int>(charts::State::act), finding);
-  if (!view.findings.empty()) copies(look, "the findings", [&] { return figures_of(view); });
+  const std::size_t found = view.findings.size();
+  if (found == 0)
+    quiet(look, "No rule finds anything.");
+  else
+    standing(look, static_cast<int>(charts::State::act),
+             std::to_string(found) + (found == 1 ? " finding" : " findings") + ", told under the charts");
   for (const std::string& note : view.notes) quiet(look, note);
   ImGui::SetNextItemWidth(look.px(230));
   ImGui::InputTextWithHint("##file", "trends.pdf, .svg or .png", &state.file);
@@ -72,6 +75,11 @@ void draw_trends(const TrendsView& view, const std::string& tank, PanelState& st
   constexpr float height = 220;
   const float width = ImGui::GetContentRegionAvail().x / look.scale;
   for (const charts::Chart& chart : view.charts) draw_plot(chart, width, height, look);
+  if (found == 0) return;
+  heading(look, "Findings");
+  copies(look, "the findings", [&] { return figures_of(view); });
+  for (const std::string& finding : view.findings)
+    standing(look, static_cast<int>(charts::State::act), finding);
 }
 
 void draw_hand_over(const HandOverView& view, const SignView& sign, const PrintedView& printed,
