@@ -24,9 +24,11 @@ namespace {
 
 /// Now by the shop's clock (UTC where no shifts are set, as the log reads it), as a readings file writes it.
 std::string now_in_shop(const std::optional<shifts::Calendar>& calendar) {
-  std::string time = sheets::local_time(logbook::iso_utc(work::wall_clock().utc_now()), calendar);
+  const std::string utc = logbook::iso_utc(work::wall_clock().utc_now());
+  std::string time = sheets::local_time(utc, calendar);
   std::ranges::replace(time, ' ', 'T');
-  return time + ":00";
+  constexpr std::size_t seconds_at = 16, seconds_long = 3;  // zones differ by whole minutes
+  return time + utc.substr(seconds_at, seconds_long);
 }
 
 bool nothing_typed(const Draft& draft) {

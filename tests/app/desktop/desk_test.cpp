@@ -48,6 +48,14 @@ work::Session with_plugins_of(const fs::path& folder) {
   return session;
 }
 
+/// A copy of one of the plugins made for tests, alone in a folder of the user's.
+fs::path own_plugin(const Home& home, const std::string& name) {
+  const fs::path folder = home.path / "mine";
+  fs::create_directories(folder);
+  fs::copy_file(fs::path(TEST_PLUGINS) / name, folder / name);
+  return folder / name;
+}
+
 void rest(Desk& desk) {
   using namespace std::chrono_literals;
   const auto until = std::chrono::steady_clock::now() + 120s;
@@ -139,6 +147,24 @@ TEST_CASE("every page's figures are in the chosen units", "[desktop]") {
   CHECK(desk.view().additions.additions.back().amount == Approx(2 * planned));
 }
 
+TEST_CASE("a sample is timed to the second, so that what was added in the same minute stays before it",
+          "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  constexpr std::size_t to_the_second = 19;
+  const std::string before = logbook::iso_utc(work::wall_clock().utc_now()).substr(0, to_the_second);
+  type_the_readings(desk);
+  std::string typed;
+  for (const auto& entry : fs::directory_iterator(home.path / "XDG_STATE_HOME/bathwright/typing"))
+    if (entry.path().extension() == ".toml") {
+      std::ifstream file(entry.path());
+      typed.assign(std::istreambuf_iterator<char>(file), {});
+    }
+  const std::string key = "sampled = ";
+  REQUIRE(typed.find(key) != std::string::npos);
+  CHECK(typed.substr(typed.find(key) + key.size(), to_the_second) >= before);
+}
+
 TEST_CASE("what is printed is shown and sent to the print command", "[desktop]") {
   const Home home;
   Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
@@ -189,10 +215,8 @@ TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
 
 TEST_CASE("a plugin is looked at, allowed and withdrawn at the window", "[desktop]") {
   const Home home;
-  const fs::path mine = home.path / "mine", file = mine / "sound.bathtype.so";
-  fs::create_directories(mine);
-  fs::copy_file(fs::path(TEST_PLUGINS) / "sound.bathtype.so", file);
-  Desk desk(with_plugins_of(mine), PROJECT_DIR "/baths", [] {});
+  const fs::path file = own_plugin(home, "sound.bathtype.so");
+  Desk desk(with_plugins_of(file.parent_path()), PROJECT_DIR "/baths", [] {});
   ask(desk, GoTo{PageName::bath_types});
   const auto row = [&] {
     const auto& rows = desk.view().bath_types.rows;
@@ -224,10 +248,8 @@ TEST_CASE("a plugin is looked at, allowed and withdrawn at the window", "[deskto
 
 TEST_CASE("a plugin with a fault is shown with it and cannot be allowed", "[failure][desktop]") {
   const Home home;
-  const fs::path mine = home.path / "mine", file = mine / "prints.bathtype.so";
-  fs::create_directories(mine);
-  fs::copy_file(fs::path(TEST_PLUGINS) / "prints.bathtype.so", file);
-  Desk desk(with_plugins_of(mine), PROJECT_DIR "/baths", [] {});
+  const fs::path file = own_plugin(home, "prints.bathtype.so");
+  Desk desk(with_plugins_of(file.parent_path()), PROJECT_DIR "/baths", [] {});
   ask(desk, ExaminePlugin{file.string()});
   REQUIRE(desk.view().bath_types.examined);
   CHECK_FALSE(desk.view().bath_types.examined->faults.empty());
