@@ -1,6 +1,5 @@
 #include "shop.hpp"
 
-
 #include <algorithm>
 #include <bathwright/base/nearest.hpp>
 #include <bathwright/bath/quantity_meant.hpp>

@@ -56,32 +56,34 @@ std::optional<std::chrono::sys_days> date_of(const std::string& time) {
   return std::chrono::floor<std::chrono::days>(*midnight);
 }
 
-/// The date `hours` ago, by the clock of the log's shop.
-Result<std::optional<std::chrono::sys_days>> date_before(const Session& session, double hours) {
-  const auto log = open_log_to_read(session);
-  if (!log) return log.problems();
-  const auto calendar = calendar_of(*log);
-  if (!calendar) return calendar.problems();
+/// The date `hours` ago, by the shop's clock.
+std::optional<std::chrono::sys_days> date_before(double hours,
+                                                 const std::optional<shifts::Calendar>& calendar) {
   const auto then = wall_clock().utc_now() - std::chrono::round<std::chrono::milliseconds>(
                                                  std::chrono::duration<double, std::ratio<3600>>(hours));
-  return date_of(sheets::local_time(logbook::iso_utc(then), *calendar));
+  return date_of(sheets::local_time(logbook::iso_utc(then), calendar));
 }
 
+struct BookBefore {
+  std::optional<book::FromLog> from_log;  ///< nothing: there is no log, or no analysis to start from
+  std::optional<shifts::Calendar> calendar;
+};
+
 /// What the log has of the tank up to these readings; without any, up to now.
-Result<std::optional<book::FromLog>> book_before(const Session& session, const Shop& shop,
-                                                 const std::string& readings_path,
-                                                 const std::string& sampled) {
+Result<BookBefore> book_before(const Session& session, const Shop& shop, const std::string& readings_path,
+                               const std::string& sampled) {
   std::error_code failure;
-  if (session.log_file.empty() || !std::filesystem::exists(log_path(session), failure))
-    return std::optional<book::FromLog>{};
+  if (session.log_file.empty() || !std::filesystem::exists(log_path(session), failure)) return BookBefore{};
   const auto log = open_log_to_read(session);
   if (!log) return log.problems();
   const auto calendar = calendar_of(*log);
   if (!calendar) return calendar.problems();
   std::ifstream file(readings_path, std::ios::binary);
-  return book::from_log(
+  auto from_log = book::from_log(
       *log, *calendar, shop.tank, shop.chemistry,
       {std::string(std::istreambuf_iterator<char>(file), {}), sampled, wall_clock().utc_now()});
+  if (!from_log) return from_log.problems();
+  return BookBefore{*std::move(from_log), *calendar};
 }
 
 /// Whether two documents of `analyse` hold the same figures, whatever is said about them.
@@ -118,8 +120,8 @@ Result<Analysed> analyse(const Session& session, const Shop& shop, const std::st
   const auto carried = book_before(session, shop, readings_path, readings->sampled);
   if (!carried) return carried.problems();
   std::optional<analysis::Book> book;
-  if (*carried)
-    book = (*carried)->book;
+  if (carried->from_log)
+    book = carried->from_log->book;
   else if (*last)
     book = (*last)->book;
   auto analysis = analysis::evaluate(*readings, shop.tank, shop.chemistry, book);
@@ -129,8 +131,8 @@ Result<Analysed> analyse(const Session& session, const Shop& shop, const std::st
       same_figures(analysis_document(shop.tank, shop.chemistry, analysed.analysis), (*last)->document)) {
     analysed.logged_as = (*last)->seq;
     analysed.changed_since = (*last)->changed_since;
-  } else if (*carried) {
-    analysed.changed_since = (*carried)->after_sample;
+  } else if (carried->from_log) {
+    analysed.changed_since = carried->from_log->after_sample;
   }
   return analysed;
 }
@@ -168,11 +170,11 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
     const auto book = book_before(session, shop, "", "");
     if (!book) return book.problems();
     constexpr double oldest_days = 31;  // beyond it what nobody logged outweighs what was
-    const double days = *book ? (*book)->hours / 24 : 0;
-    const bool carried = *book && (*book)->book.carried && days <= oldest_days;
-    const auto day = date_before(session, carried ? 0 : 24 * days);
-    if (!day) return day.problems();
-    if (carried) return from_book((*book)->book, **last, shop, *day);
+    const auto& logged = book->from_log;
+    const double days = logged ? logged->hours / 24 : 0;
+    const bool carried = logged && logged->book.carried && days <= oldest_days;
+    const auto day = date_before(carried ? 0 : 24 * days, book->calendar);
+    if (carried) return from_book(logged->book, **last, shop, day);
     const std::string age = days <= oldest_days ? ""
                                                 : ", " + std::to_string(std::lround(days)) +
                                                       " days old: too old to be carried through the log";
@@ -181,7 +183,7 @@ Result<StartingState> starting_state(const Session& session, const Shop& shop,
     return StartingState{*std::move(state),
                          {"analysis of " + (*last)->book.from + age, (*last)->temperature, *(*last)->book.pH,
                           (*last)->changed_since},
-                         *day};
+                         day};
   }
   auto state = bath::state_at_aims(shop.tank, shop.chemistry);
   if (!state) return state.problems();

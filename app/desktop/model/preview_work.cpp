@@ -13,7 +13,7 @@ std::string print(const PrintedSheet& sheet) {
 
 Preview preview_of(const PrintedSheet& sheet) {
   constexpr double dots_per_inch = 115;  // A4 about as wide as the page of the window
-  Preview preview{sheet.file, {}, {}};
+  Preview preview;
   auto pictures = sheets::pictures_of(sheet.page, sheet.paper, dots_per_inch);
   if (!pictures) {
     preview.problems = pictures.problems();

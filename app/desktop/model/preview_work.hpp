@@ -18,7 +18,6 @@ struct PrintedSheet {
 [[nodiscard]] std::string print(const PrintedSheet& sheet);
 
 struct Preview {
-  std::filesystem::path file;
   std::vector<std::shared_ptr<const sheets::Picture>> sheets;
   Problems problems;
 };

@@ -44,7 +44,6 @@ class Units {
   [[nodiscard]] std::string typed(const bath::Quantity& quantity) const;
   /// The chosen unit of levels needs what is known of a tank as it is now, and not of its future or past.
   [[nodiscard]] bool only_for_now() const;
-  [[nodiscard]] const std::string& concentration() const { return concentration_; }
 
   /// Of a chemical that goes in; `unit` is the engine's, "kg" or "L".
   [[nodiscard]] AmountUnit amount_unit(const std::string& unit) const;

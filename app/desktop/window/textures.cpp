@@ -1,17 +1,11 @@
 #include "textures.hpp"
 
-#include <GLFW/glfw3.h>
-
 #include <cstdint>
+
+#include "gl_function.hpp"
 
 namespace bathwright::desktop {
 namespace {
-
-/// OpenGL's own functions are looked up, so that nothing more has to be linked.
-template <class Function>
-Function gl(const char* name) {
-  return reinterpret_cast<Function>(glfwGetProcAddress(name));
-}
 
 unsigned uploaded(const sheets::Picture& picture) {
   static const auto generate = gl<void (*)(GLsizei, GLuint*)>("glGenTextures");

@@ -14,6 +14,7 @@
 #include <string>
 #include <vector>
 
+#include "gl_function.hpp"
 #include "theme.hpp"
 
 namespace bathwright::desktop {
@@ -69,21 +70,18 @@ void start_again_in_software() {
 }
 
 const char* gl_text(unsigned name) {
-  using GetString = const unsigned char* (*)(unsigned);
-  const auto get = reinterpret_cast<GetString>(glfwGetProcAddress("glGetString"));
+  const auto get = gl<const unsigned char* (*)(unsigned)>("glGetString");
   const unsigned char* text = get ? get(name) : nullptr;
   return text ? reinterpret_cast<const char*>(text) : "";
 }
 
 /// The whole picture in one colour, without the triangles of a filled rectangle.
 void clear(charts::Colour c) {
-  using ClearColour = void (*)(float, float, float, float);
-  using Clear = void (*)(unsigned);
-  constexpr unsigned gl_colour_buffer = 0x4000;
+  static const auto set = gl<void (*)(float, float, float, float)>("glClearColor");
+  static const auto all = gl<void (*)(GLbitfield)>("glClear");
   const ImVec4 ground = colour(c);
-  if (const auto set = reinterpret_cast<ClearColour>(glfwGetProcAddress("glClearColor")))
-    set(ground.x, ground.y, ground.z, 1);
-  if (const auto all = reinterpret_cast<Clear>(glfwGetProcAddress("glClear"))) all(gl_colour_buffer);
+  if (set) set(ground.x, ground.y, ground.z, 1);
+  if (all) all(GL_COLOR_BUFFER_BIT);
 }
 
 GLFWwindow* create(const Window::Wish& wish) {
