@@ -8,7 +8,7 @@
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
 
-#include "views.hpp"
+#include "views/views.hpp"
 #include "work/constants.hpp"
 #include "work/demonstration.hpp"
 #include "work/dose_document.hpp"

@@ -1,14 +1,14 @@
 // From what was worked out to what the panels show, in words.
 #pragma once
 
-#include "../panels/view.hpp"
-#include "forecast_work.hpp"
-#include "log_work.hpp"
-#include "reading_draft.hpp"
-#include "shop_folder.hpp"
-#include "tank_work.hpp"
-#include "trends_work.hpp"
-#include "units.hpp"
+#include "../../panels/view.hpp"
+#include "../forecast_work.hpp"
+#include "../log_work.hpp"
+#include "../reading_draft.hpp"
+#include "../shop_folder.hpp"
+#include "../tank_work.hpp"
+#include "../trends_work.hpp"
+#include "../units.hpp"
 
 namespace bathwright::desktop {
 
