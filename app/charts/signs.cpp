@@ -95,7 +95,8 @@ void draw_strip(Canvas& canvas, const Box& box, const StripSign& sign, const Pal
   if (sign.predicted) place(*sign.predicted, palette.predicted, false);
 }
 
-void draw_headroom(Canvas& canvas, const Box& box, double of_saturation, const Palette& palette) {
+void draw_headroom(Canvas& canvas, const Box& box, double of_saturation, std::optional<double> then,
+                   const Palette& palette) {
   const bool forms = of_saturation >= 1;
   const double share = std::clamp(of_saturation, 0.0, 1.0);
   const Box full{box.left, box.top, share * box.width, box.height};
@@ -103,6 +104,9 @@ void draw_headroom(Canvas& canvas, const Box& box, double of_saturation, const P
   hatch(canvas, full, faint(forms ? palette.stop : palette.quiet, 200), 6 - 3 * share);
   segment(canvas, {box.right(), box.top - 2}, {box.right(), box.bottom() + 2}, {palette.stop, 2});
   segment(canvas, {box.left, box.bottom()}, {box.right(), box.bottom()}, {palette.rule, 1});
+  if (!then) return;
+  const double x = box.left + std::clamp(*then, 0.0, 1.0) * box.width;
+  segment(canvas, {x, box.top - 1}, {x, box.bottom() + 1}, {palette.predicted, 2});
 }
 
 }  // namespace bathwright::charts

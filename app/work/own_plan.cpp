@@ -12,7 +12,7 @@ Result<dosing::AdditionSheet> check_own_plan(const Shop& shop, const bath::TankS
   if (!written) return written.problems();
   std::vector<dosing::Wanted> wanted;
   Problems problems;
-  for (const auto& one : *written) {
+  for (const auto& one : written->additions) {
     auto read = read_wanted(shop, one.amount, one.chemical, one.where);
     if (read)
       wanted.push_back(read->wanted);
@@ -20,7 +20,7 @@ Result<dosing::AdditionSheet> check_own_plan(const Shop& shop, const bath::TankS
       problems.insert(problems.end(), read.problems().begin(), read.problems().end());
   }
   if (!problems.empty()) return problems;
-  return dosing::check_plan(shop.tank, shop.chemistry, now, wanted);
+  return dosing::check_plan(shop.tank, shop.chemistry, now, wanted, written->take_out.v);
 }
 
 }  // namespace bathwright::work

@@ -6,6 +6,7 @@
 #include <deque>
 
 #include "steps.hpp"
+#include "take_out.hpp"
 
 namespace bathwright::dosing {
 namespace {
@@ -50,7 +51,7 @@ std::vector<std::string> levels_left(const Tank& tank, const Chemistry& chemistr
 }  // namespace
 
 Result<AdditionSheet> check_plan(const Tank& tank, const Chemistry& chemistry, const bath::TankState& now,
-                                 const std::vector<Wanted>& wanted) {
+                                 const std::vector<Wanted>& wanted, double take_out_L) {
   AdditionSheet sheet;
   auto view = chemistry.view(now);
   if (!view) return view.problems();
@@ -86,21 +87,26 @@ Result<AdditionSheet> check_plan(const Tank& tank, const Chemistry& chemistry, c
     brings.push_back(*std::move(what));
     if (one.kg > 0) amounts.push_back({&items.back(), &brings.back(), one.kg});
   }
+  const auto taken_out = take_out(chemistry, now, take_out_L);
+  if (!taken_out) problems.insert(problems.end(), taken_out.problems().begin(), taken_out.problems().end());
   if (!problems.empty()) return problems;
 
-  auto made = make_steps(tank, chemistry, now, std::move(amounts), Sequence::as_given);
+  auto made = make_steps(tank, chemistry, taken_out->left, std::move(amounts), Sequence::as_given);
   if (!made) return made.problems();
   Steps steps = *std::move(made);
   Plan plan;
   plan.kind = "own list";
   plan.additions = std::move(steps.additions);
   plan.steps = std::move(steps.steps);
+  plan.decant_L = take_out_L;
+  if (take_out_L > 0) put_first(plan, taken_out->step);
   plan.final_state = std::move(steps.final_state);
   plan.keep_apart = std::move(steps.keep_apart);
   auto end = chemistry.view(plan.final_state);
   if (!end) return end.problems();
   plan.final_view = *std::move(end);
   plan.unmet = levels_left(tank, chemistry, sheet.now, plan.final_view);
+  plan.cost = take_out_L * tank.dosing.waste_price_per_L;
   for (const Addition& addition : plan.additions) plan.cost += addition.cost;
   for (Refusal& refusal : steps.refused) sheet.refused.push_back(std::move(refusal));
   plan.feasible = sheet.refused.empty() && std::ranges::none_of(plan.steps, [](const Step& step) {

@@ -6,6 +6,7 @@
 
 #include "conflicts.hpp"
 #include "steps.hpp"
+#include "take_out.hpp"
 #include "waits.hpp"
 #include "weighing.hpp"
 
@@ -277,22 +278,6 @@ std::vector<std::string> left_alone(const Situation& s) {
   return lines;
 }
 
-/// The first step; those after it count on.
-void take_out_first(Plan& plan, const bath::TankView& taken_out) {
-  for (Step& step : plan.steps) ++step.number;
-  Step first;
-  first.number = 1;
-  first.takes_out = true;
-  first.name = "bath";
-  first.unit = "L";
-  first.amount = plan.decant_L;
-  first.kg = plan.decant_L * taken_out.density_kg_per_L;
-  first.how = "To the waste treatment, before anything is added.";
-  first.why_here = "what is taken out afterwards takes the additions with it";
-  first.predicted = taken_out;
-  plan.steps.insert(plan.steps.begin(), std::move(first));
-}
-
 std::vector<Rest> rest_of(const Situation& s, const Amounts& amounts) {
   std::vector<Rest> rest;
   for (std::size_t c = 0; c < amounts.rest_kg.size(); ++c) {
@@ -351,17 +336,13 @@ Result<Plan> plan_with(const Situation& s, const Wish& wish, const Amounts& amou
     plan.cost += amounts.kg[c] * supply.price_per_kg;
     plan.salt_load_mol += amounts.kg[c] * supply.salt_mol_per_kg;
   }
-  TankState start = s.now;
-  const double decanted_share = amounts.decant_L / s.now_view.volume_L;
-  for (double& mol : start.component_mol) mol *= 1 - decanted_share;
-  start.water_kg *= 1 - decanted_share;
-  const auto taken_out = s.chemistry.quick_view(start);
+  const auto taken_out = take_out(s.chemistry, s.now, amounts.decant_L);
   if (!taken_out) return taken_out.problems();
-  auto steps = make_steps(s.tank, s.chemistry, std::move(start), std::move(portioned));
+  auto steps = make_steps(s.tank, s.chemistry, taken_out->left, std::move(portioned));
   if (!steps) return steps.problems();
   plan.additions = std::move(steps->additions);
   plan.steps = std::move(steps->steps);
-  if (amounts.decant_L > 0) take_out_first(plan, *taken_out);
+  if (amounts.decant_L > 0) put_first(plan, taken_out->step);
   plan.rest = rest_of(s, amounts);
   plan.final_state = std::move(steps->final_state);
   plan.keep_apart = std::move(steps->keep_apart);

@@ -2,6 +2,7 @@
 
 #include <atomic>
 #include <bathwright/base/normal.hpp>
+#include <bathwright/bath/taken_out.hpp>
 #include <cmath>
 #include <mutex>
 #include <thread>
@@ -49,12 +50,6 @@ Result<std::vector<Doubtful>> doubtful_additions(const Tank& tank, const Chemist
                    item->stock.liquid ? spread.u_measured_rel : spread.u_weighed_rel});
   }
   return all;
-}
-
-TankState decanted(TankState state, double kept_share) {
-  for (double& mol : state.component_mol) mol *= kept_share;
-  state.water_kg *= kept_share;
-  return state;
 }
 
 class Sampler {
@@ -108,7 +103,7 @@ Result<Sampler> Sampler::prepare(const Tank& tank, const Chemistry& chemistry, c
                      aim.quantity + " is not a quantity of " + chemistry.type().name, "", ""};
   }
   const double kept_share = 1 - plan.decant_L / chemistry.volume_L(now);
-  s.end_ = decanted(now, kept_share);
+  s.end_ = bath::without(now, 1 - kept_share);
   for (const Doubtful& addition : s.additions_) s.end_ = addition.stirred_into(std::move(s.end_), 0, 0);
   if (Outcome watched = s.watch_solids(); !watched) return watched.problems();
   if (spread.with_constants) {
@@ -132,7 +127,7 @@ Outcome Sampler::watch_solids() {
 
 TankState Sampler::dosed(const TankState& state, Normal& normal) const {
   const double taken_L = plan_.decant_L * (1 + spread_.u_measured_rel * normal());
-  TankState end = decanted(state, std::max(0.0, 1 - taken_L / chemistry_.volume_L(state)));
+  TankState end = bath::without(state, std::min(1.0, taken_L / chemistry_.volume_L(state)));
   for (const Doubtful& addition : additions_) {
     const double assay = addition.u_assay_rel * normal(), kg = addition.u_kg_rel * normal();
     end = addition.stirred_into(std::move(end), assay, kg);

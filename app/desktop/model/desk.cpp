@@ -133,7 +133,7 @@ void Desk::open_tank(int tank) {
   open_ = tank;
   worked_.reset();
   draft_.reset();
-  edited_.clear();
+  own_.reset();
   plan_ = 0;
   said_.clear();
   policies_ = shop_.policies(static_cast<std::size_t>(tank));
@@ -182,13 +182,13 @@ void Desk::handle(const Intent& intent) {
                         },
                         [&](const ChoosePlan& chosen) {
                           plan_ = chosen.plan;
-                          edited_.clear();
+                          own_.reset();
                           ask();
                         },
                         [&](const DragAmount& dragged) { drag(dragged); },
                         [&](const AddChemical& added) { add_chemical(added.chemical); },
                         [&](const BackToPlan&) {
-                          edited_.clear();
+                          own_.reset();
                           ask();
                         },
                         [&](const LogAnalysis& asked) { log_analysis(asked.names); },
@@ -287,24 +287,35 @@ void Desk::settings_changed() {
 void Desk::draft_changed() {
   if (const Outcome kept = keep_draft(draft_file(), with_units(draft_->now(), head_units())); !kept)
     fault_ = text(kept.problems());
-  edited_.clear();
+  own_.reset();
   plan_ = 0;
   ask();
 }
 
 /// The plan that is shown becomes a list of the person's own.
 void Desk::begin_edit() {
-  if (!edited_.empty() || !worked_ || !worked_->sheet || worked_->sheet->plans.empty()) return;
+  if (own_ || !worked_ || !worked_->sheet || worked_->sheet->plans.empty()) return;
   const auto& plans = worked_->sheet->plans;
-  for (const auto& addition : plans[std::min(static_cast<std::size_t>(plan_), plans.size() - 1)].additions)
-    edited_.emplace_back(addition.chemical, addition.kg);
+  const dosing::Plan& plan = plans[std::min(static_cast<std::size_t>(plan_), plans.size() - 1)];
+  own_.emplace();
+  if (plan.decant_L > 0) own_->take_out_L = plan.decant_L;
+  for (const auto& addition : plan.additions) own_->kg.emplace_back(addition.chemical, addition.kg);
 }
 
 void Desk::drag(const DragAmount& drag) {
   if (!worked_ || !worked_->sheet || drag.amount < 0) return;
   begin_edit();
-  if (drag.addition < 0 || drag.addition >= static_cast<int>(edited_.size())) return;
-  auto& [id, kg] = edited_[static_cast<std::size_t>(drag.addition)];
+  if (!own_ || drag.addition < 0) return;
+  auto row = static_cast<std::size_t>(drag.addition);
+  if (own_->take_out_L) {  // it stands above the chemicals
+    if (row == 0) {
+      own_->take_out_L = drag.amount / units_.amount_unit("L").per_one;
+      return ask();
+    }
+    --row;
+  }
+  if (row >= own_->kg.size()) return;
+  auto& [id, kg] = own_->kg[row];
   const matter::StockChemical* stock = stock_of(*tank(), id);
   if (!stock) return;
   const double amount = drag.amount / units_.amount_unit(stock->liquid ? "L" : "kg").per_one;
@@ -316,14 +327,15 @@ void Desk::add_chemical(const std::string& chemical) {
   const bath::Tank* open = tank();
   if (!open || !stock_of(*open, chemical) || !worked_ || !worked_->sheet) return;
   begin_edit();
+  if (!own_) own_.emplace();
   constexpr double first_kg = 1;  // something to drag from
-  edited_.emplace_back(chemical, first_kg);
+  own_->kg.emplace_back(chemical, first_kg);
   ask();
 }
 
 void Desk::ask() {
   if (open_ < 0) return;
-  Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, edited_, plan_, log_.last};
+  Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, own_, plan_, log_.last};
   if (draft_ && !nothing_typed(draft_->now())) {
     const std::filesystem::path file = draft_file().replace_extension(".toml");
     if (const Outcome written =
@@ -396,6 +408,10 @@ void Desk::issue_slip(const Names& names) {
   if (!worked_ || !worked_->analysed || !worked_->sheet || !shown_plan(*worked_, plan_)) return;
   said_.clear();
   if (signing_.busy()) return;
+  if (worked_->own_of != own_) {
+    fault_ = "The list is still being checked, or could not be: nothing is issued.";
+    return;
+  }
   being_printed_ = std::make_shared<PrintedSheet>();
   signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_,
                   printed = being_printed_, paper = paper_of(settings_),
@@ -668,8 +684,8 @@ void Desk::show() {
   view_.readings.units = {settings_.volume, settings_.temperature};
   if (!draft_ && worked)
     for (const Problem& problem : worked->problems) view_.readings.faults.push_back(problem.text());
-  view_.state = worked ? state_view(*worked, shown_plan(*worked, plan_), units_) : StateView{};
-  view_.additions = worked ? additions_view(*worked, plan_, edited_, units_) : AdditionsView{};
+  view_.state = worked ? state_view(*worked, units_) : StateView{};
+  view_.additions = worked ? additions_view(*worked, plan_, own_, units_) : AdditionsView{};
   view_.additions.working = tank_job_.working();
   view_.chemistry = worked ? chemistry_view(*worked, units_) : ChemistryView{};
   view_.slip = slip_view(log_.slip, log_.calendar, units_);

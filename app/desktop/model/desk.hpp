@@ -80,7 +80,7 @@ class Desk {
   Draft blank_;
   std::vector<int> line_of_row_;
   int plan_ = 0;
-  std::vector<std::pair<std::string, double>> edited_;  ///< stock id, kg
+  std::optional<OwnList> own_;  ///< the plan that is shown, changed by hand
   std::optional<Worked> worked_;
   LogNow log_;
   std::string filter_, fault_, said_;

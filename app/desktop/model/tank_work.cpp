@@ -1,7 +1,9 @@
 #include "tank_work.hpp"
 
 #include <algorithm>
+#include <bathwright/bath/taken_out.hpp>
 #include <bathwright/bath/uncertainty.hpp>
+#include <cmath>
 #include <fstream>
 #include <iterator>
 
@@ -15,25 +17,52 @@ std::string contents(const std::filesystem::path& file) {
   return {std::istreambuf_iterator<char>(in), {}};
 }
 
-/// Free ions and headroom along a plan, a few points for each of its steps.
-std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& from, const dosing::Plan& plan,
-                               const std::stop_token& stop) {
-  constexpr int points_a_step = 3;
+/// What happens to a tank at once.
+struct Move {
+  double take_out_L = 0;
+  std::string chemical;
+  double kg = 0;
+};
+
+std::vector<Move> moves_of(const dosing::Plan& plan) {
+  std::vector<Move> moves;
+  for (const dosing::Step& step : plan.steps)
+    moves.push_back(step.takes_out ? Move{step.amount, {}, 0} : Move{0, step.chemical, step.kg});
+  return moves;
+}
+
+std::vector<Move> moves_of(const OwnList& list) {
+  std::vector<Move> moves;
+  if (list.take_out_L) moves.push_back({*list.take_out_L, {}, 0});
+  for (const auto& [id, kg] : list.kg) moves.push_back({0, id, kg});
+  return moves;
+}
+
+/// Free ions and headroom on the way: where it begins and ends, and `points` within.
+std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& from,
+                               const std::vector<Move>& moves, const std::stop_token& stop) {
+  constexpr double points = 20;
+  double all_kg = 0, kg = 0;
+  for (const Move& move : moves) all_kg += move.kg;
   std::vector<PathPoint> path;
   bath::TankState state = from;
-  double kg = 0;
   const auto add = [&] {
     if (auto view = shop.chemistry.quick_view(state)) path.push_back({kg, *std::move(view)});
   };
   add();
-  for (const dosing::Step& step : plan.steps) {
-    const matter::StockChemical* stock = stock_of(shop.tank, step.chemical);
-    if (!stock) continue;
-    const auto brings = shop.chemistry.brings(*stock);
+  for (const Move& move : moves) {
+    if (move.take_out_L > 0) {
+      state =
+          bath::without(std::move(state), std::min(1.0, move.take_out_L / shop.chemistry.volume_L(state)));
+      add();
+    }
+    const matter::StockChemical* stock = move.kg > 0 ? stock_of(shop.tank, move.chemical) : nullptr;
+    const auto brings = stock ? shop.chemistry.brings(*stock) : Result<bath::Brings>(Problems{});
     if (!brings) continue;
-    for (int i = 0; i < points_a_step && !stop.stop_requested(); ++i) {
-      state = bath::Chemistry::after(std::move(state), *brings, step.kg / points_a_step);
-      kg += step.kg / points_a_step;
+    const int steps = std::max(1, static_cast<int>(std::lround(points * move.kg / all_kg)));
+    for (int i = 0; i < steps && !stop.stop_requested(); ++i) {
+      state = bath::Chemistry::after(std::move(state), *brings, move.kg / steps);
+      kg += move.kg / steps;
       add();
     }
   }
@@ -93,6 +122,18 @@ Worked TankWork::worked_out(const Question& question, const std::shared_ptr<cons
   return worked;
 }
 
+void TankWork::check_own(const OwnList& list, Worked& worked) const {
+  std::vector<dosing::Wanted> wanted;
+  for (const auto& [id, kg] : list.kg)
+    if (const matter::StockChemical* stock = stock_of(shop_->tank, id); stock && kg > 0)
+      wanted.push_back({*stock, kg});
+  auto checked = dosing::check_plan(shop_->tank, shop_->chemistry, worked.analysed->analysis.state, wanted,
+                                    list.take_out_L.value_or(0));
+  worked.own_of = list;
+  worked.own_problems = checked ? Problems{} : checked.problems();
+  worked.own = checked ? std::optional(*std::move(checked)) : std::nullopt;
+}
+
 void TankWork::answer(const Question& question, const std::stop_token& stop,
                       const std::function<void(Worked)>& give) {
   const auto shop = opened(question);
@@ -112,26 +153,27 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
   Worked worked = *planned_;
   if (!worked.analysed || !worked.sheet) return give(std::move(worked));
   const bath::TankState& from = worked.analysed->analysis.state;
-  if (!question.edited.empty()) {
-    std::vector<dosing::Wanted> wanted;
-    for (const auto& [id, kg] : question.edited)
-      if (const matter::StockChemical* stock = stock_of((*shop)->tank, id); stock && kg > 0)
-        wanted.push_back({*stock, kg});
-    auto own = dosing::check_plan((*shop)->tank, (*shop)->chemistry, from, wanted);
-    if (own)
-      worked.own = *std::move(own);
-    else
-      worked.problems = own.problems();
+  if (question.own) {
+    worked.path = path_of(**shop, from, moves_of(*question.own), stop);
+    give(worked);
+    if (stop.stop_requested()) return;
+    check_own(*question.own, *planned_);
+    worked.own_of = planned_->own_of;
+    worked.own = planned_->own;
+    worked.own_problems = planned_->own_problems;
+    if (worked.own && !worked.own->refused.empty())  // what is refused goes nowhere
+      worked.path = path_of(**shop, from, moves_of(worked.own->plans.front()), stop);
+    return give(std::move(worked));
   }
-  const auto& sheet = worked.own ? worked.own : worked.sheet;
-  if (!sheet->plans.empty()) {
+  worked.own_of = planned_->own_of = std::nullopt;
+  worked.own = planned_->own = std::nullopt;
+  if (!worked.sheet->plans.empty()) {
     const auto plan =
-        worked.own ? 0
-                   : std::min<std::size_t>(static_cast<std::size_t>(question.plan), sheet->plans.size() - 1);
-    worked.path = path_of(**shop, from, sheet->plans[plan], stop);
+        std::min<std::size_t>(static_cast<std::size_t>(question.plan), worked.sheet->plans.size() - 1);
+    worked.path = path_of(**shop, from, moves_of(worked.sheet->plans[plan]), stop);
   }
   give(worked);
-  if (sampled_ || worked.own || stop.stop_requested()) return;
+  if (sampled_ || stop.stop_requested()) return;
   auto sampled =
       dosing::plan_additions((*shop)->tank, (*shop)->chemistry, from,
                              work::request_for(worked.analysed->analysis, dosing::Sampling{}.samples));

@@ -21,12 +21,18 @@ struct PathPoint {
   bath::TankView view;
 };
 
+/// A plan's amounts as a person changed them.
+struct OwnList {
+  std::optional<double> take_out_L;  ///< of bath, before anything goes in; none where the plan has none
+  std::vector<std::pair<std::string, double>> kg;  ///< by stock id, in the order they go in
+  bool operator==(const OwnList&) const = default;
+};
+
 struct Question {
   work::Session session;
   std::filesystem::path tank_file;
   std::filesystem::path readings_file;  ///< empty: nothing typed
-  /// Amounts of the plan as a person changed them, in the order of its additions; empty: as planned.
-  std::vector<std::pair<std::string, double>> edited;  ///< stock id, kg
+  std::optional<OwnList> own;           ///< nothing: the plan as it is
   int plan = 0;
   std::int64_t log_state = 0;  ///< the last entry of the log: what follows from it is worked out anew
 };
@@ -38,9 +44,11 @@ struct Worked {
   std::optional<sheets::StateRead> read;
   std::optional<bath::TankView> now;
   std::optional<dosing::AdditionSheet> sheet;  ///< the planner's
-  std::optional<dosing::AdditionSheet> own;    ///< the edited plan, checked
-  std::vector<PathPoint> path;                 ///< along the plan that is shown
-  Problems problems;                           ///< what kept the rest from being worked out
+  std::optional<dosing::AdditionSheet> own;    ///< the person's list, checked; nothing where that failed
+  std::optional<OwnList> own_of;  ///< the list that `own` is of: an older one while it is dragged
+  std::vector<PathPoint> path;    ///< along what is asked for, checked or not yet
+  Problems problems;              ///< what kept the rest from being worked out
+  Problems own_problems;          ///< of a list that could not be checked
 };
 
 /// On the tank's shelf, else in the catalogue; nullptr where nobody knows it.
@@ -50,19 +58,22 @@ struct Worked {
 /// readings.
 class TankWork {
  public:
-  /// Gives the plans first, then with how sure they are.
+  /// Of a person's list gives the path first, which moves with the hand, and then the list checked; of plans
+  /// the plans first, then with how sure they are.
   void answer(const Question& question, const std::stop_token& stop, const std::function<void(Worked)>& give);
 
  private:
   Result<std::shared_ptr<const work::Shop>> opened(const Question& question);
   [[nodiscard]] Worked worked_out(const Question& question,
                                   const std::shared_ptr<const work::Shop>& shop) const;
+  /// Fills in what Worked has of the person's list.
+  void check_own(const OwnList& list, Worked& worked) const;
 
   std::filesystem::path shop_file_;
   std::filesystem::file_time_type shop_time_{};
   std::shared_ptr<const work::Shop> shop_;
-  std::string planned_for_;  ///< the readings the last plans were made for
-  std::optional<Worked> planned_;
+  std::string planned_for_;        ///< the readings the last plans were made for
+  std::optional<Worked> planned_;  ///< with the list that was checked last
   bool sampled_ = false;
 };
 

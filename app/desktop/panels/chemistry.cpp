@@ -8,9 +8,33 @@
 namespace bathwright::desktop {
 namespace {
 
+/// Of the tank after the additions.
+void then(const std::string& figure, const Look& look) {
+  ImGui::PushStyleColor(ImGuiCol_Text, colour(look.palette.predicted));
+  right_aligned(figure);
+  ImGui::PopStyleColor();
+}
+
+void draw_figures(const ChemistryView& view, const Look& look) {
+  if (view.figures.empty() || !ImGui::BeginTable("figures", 3, ImGuiTableFlags_SizingStretchProp)) return;
+  for (const auto& [name, weight] : {std::pair{"", 1.6F}, {"now", 1.0F}, {"then", 1.0F}})
+    ImGui::TableSetupColumn(name, 0, weight);
+  for (const FigureRow& row : view.figures) {
+    ImGui::TableNextRow();
+    ImGui::TableNextColumn();
+    ImGui::TextUnformatted(row.name.c_str());
+    ImGui::TableNextColumn();
+    right_aligned(row.now, look.fonts.bold);
+    ImGui::TableNextColumn();
+    then(row.then, look);
+  }
+  ImGui::EndTable();
+}
+
 void draw_ions(const ChemistryView& view, const Look& look, Intents& out) {
-  if (!ImGui::BeginTable("ions", 3, ImGuiTableFlags_SizingStretchProp)) return;
-  for (const auto& [name, weight] : {std::pair{"ion", 1.3F}, {"mol/kg", 1.6F}, {"activity", 0.9F}})
+  if (!ImGui::BeginTable("ions", 4, ImGuiTableFlags_SizingStretchProp)) return;
+  for (const auto& [name, weight] :
+       {std::pair{"ion", 1.25F}, {"mol/kg", 1.3F}, {"activity", 1.0F}, {"then", 1.0F}})
     ImGui::TableSetupColumn(name, 0, weight);
   ImGui::PushFont(look.fonts.caption);
   ImGui::TableHeadersRow();
@@ -31,6 +55,8 @@ void draw_ions(const ChemistryView& view, const Look& look, Intents& out) {
     ImGui::TableNextColumn();
     right_aligned(ion.activity);
     if (ImGui::IsItemHovered()) ImGui::SetTooltip("activity coefficient %s", ion.gamma.c_str());
+    ImGui::TableNextColumn();
+    then(ion.then, look);
   }
   ImGui::PopFont();
   ImGui::EndTable();
@@ -43,11 +69,11 @@ void draw_solids(const ChemistryView& view, const Look& look, Intents& out) {
   ImGui::TableSetupColumn(view.idle_at.c_str(), 0, 1);
   ImGui::PushFont(look.fonts.caption);
   ImGui::TableHeadersRow();
-  const auto room = [&](const std::string& words, double share) {
+  const auto room = [&](const std::string& words, double share, std::optional<double> share_then) {
     ImGui::TableNextColumn();
     const float width = ImGui::GetContentRegionAvail().x / look.scale;
     DrawListCanvas canvas = drawing_room(look, width, 8);
-    draw_headroom(canvas, {0, 1, width, 6}, share, look.palette);
+    draw_headroom(canvas, {0, 1, width, 6}, share, share_then, look.palette);
     right_aligned(words);
   };
   for (const SolidRow& solid : view.solids) {
@@ -56,8 +82,8 @@ void draw_solids(const ChemistryView& view, const Look& look, Intents& out) {
     standing(look, static_cast<int>(solid.forms ? charts::State::stop : charts::State::in_window),
              solid.name);
     if (ImGui::IsItemClicked()) out.emplace_back(AskSource{solid.id});
-    room(solid.working, solid.working_share);
-    room(solid.idle, solid.idle_share);
+    room(solid.working, solid.working_share, solid.working_then);
+    room(solid.idle, solid.idle_share, solid.idle_then);
   }
   ImGui::PopFont();
   ImGui::EndTable();
@@ -68,15 +94,12 @@ void draw_solids(const ChemistryView& view, const Look& look, Intents& out) {
 void draw_chemistry(const ChemistryView& view, const SourceView& source, PanelState& state, const Look& look,
                     Intents& out) {
   heading(look, "The chemistry of it");
-  for (const auto& [name, value] : view.figures) {
-    ImGui::TextUnformatted(name.c_str());
-    ImGui::SameLine();
-    right_aligned(value, look.fonts.bold);
-  }
+  draw_figures(view, look);
   heading(look, "Free ions");
   draw_ions(view, look, out);
   heading(look, "Room before it crystallises");
   draw_solids(view, look, out);
+  if (!view.ions.empty()) copies(look, "the chemistry", [&] { return figures_of(view); });
   if (!view.path.empty()) {
     heading(look, "Along the additions");
     for (const charts::Chart& chart : view.path) {

@@ -35,6 +35,23 @@ std::string figures_of(const AdditionsView& view) {
   return text;
 }
 
+std::string figures_of(const ChemistryView& view) {
+  std::string text = row({"", "now", "then"});
+  for (const FigureRow& one : view.figures) text += row({one.name, one.now, one.then});
+  text += '\n' + row({"free ion", "mol/kg", "activity", "activity then", "activity coefficient"});
+  for (const IonRow& one : view.ions)
+    text += row({one.name, one.molality, one.activity, one.then, one.gamma});
+  text += '\n' + row({"solid", "room at " + view.working_at, "at " + view.idle_at, "% of saturation", "then",
+                      "at " + view.idle_at, "then"});
+  const auto share = [](std::optional<double> of_saturation) {
+    return of_saturation && *of_saturation > 0 ? short_figure(100 * *of_saturation) : std::string();
+  };
+  for (const SolidRow& one : view.solids)
+    text += row({one.name, one.working, one.idle, share(one.working_share), share(one.working_then),
+                 share(one.idle_share), share(one.idle_then)});
+  return text;
+}
+
 std::string figures_of(const ForecastView& view) {
   std::string text = row({"limit", "met", "90 %", "why"});
   for (const LimitRow& one : view.limits) text += row({one.name, one.when, one.span, one.why});

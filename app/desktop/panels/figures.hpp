@@ -7,8 +7,9 @@ namespace bathwright::desktop {
 
 [[nodiscard]] std::string figures_of(const StateView& view);
 [[nodiscard]] std::string figures_of(const AdditionsView& view);
-[[nodiscard]] std::string figures_of(const ForecastView& view);  ///< limits, and what it costs
-[[nodiscard]] std::string figures_of(const TrendsView& view);    ///< the findings
+[[nodiscard]] std::string figures_of(const ChemistryView& view);  ///< figures, free ions, solids
+[[nodiscard]] std::string figures_of(const ForecastView& view);   ///< limits, and what it costs
+[[nodiscard]] std::string figures_of(const TrendsView& view);     ///< the findings
 [[nodiscard]] std::string figures_of(const LogView& view);
 [[nodiscard]] std::string figures_of(const charts::Chart& chart);  ///< one row a point
 [[nodiscard]] std::string figures_of(const std::vector<charts::Chart>& charts);

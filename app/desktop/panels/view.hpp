@@ -85,6 +85,7 @@ struct AdditionsView {
   std::vector<std::string> plans;  ///< "least cost, 391 EUR, 97 %"
   int plan = 0;
   bool edited = false;
+  bool checked = true;  ///< else the steps are still those of other amounts
   std::vector<AdditionRow> additions;
   std::vector<StepRow> steps;
   std::vector<std::pair<std::string, std::string>> shelf;  ///< id and name of what may be added besides
@@ -113,21 +114,29 @@ struct SignView {
   bool can_log = false, busy = false, analysis_logged = false;
 };
 
+/// A figure of the tank as it is, and at the end of the planned additions; `then` is empty where there are
+/// none.
+struct FigureRow {
+  std::string name, now, then;
+};
+
 struct IonRow {
-  std::string id;  ///< "Ni^2+", to ask for its sources
-  std::string name, molality, activity, gamma;
-  double share = 0;  ///< of the largest, 0 to 1
+  std::string id;                                     ///< "Ni^2+", to ask for its sources
+  std::string name, molality, activity, then, gamma;  ///< `then`: the activity after the additions
+  double share = 0;                                   ///< of the largest, 0 to 1
 };
 
 struct SolidRow {
   std::string id, name, working, idle;  ///< "62 kg", "-9 kg"
+  /// Of saturation, 1 at the limit; after the additions nothing where there are none.
   double working_share = 0, idle_share = 0;
+  std::optional<double> working_then, idle_then;
   bool forms = false;
 };
 
 struct ChemistryView {
-  std::string working_at, idle_at;                           ///< "55 °C"
-  std::vector<std::pair<std::string, std::string>> figures;  ///< pH, ionic strength, water activity, density
+  std::string working_at, idle_at;  ///< "55 °C"
+  std::vector<FigureRow> figures;   ///< pH, ionic strength, water activity, density
   std::vector<IonRow> ions;
   std::vector<SolidRow> solids;
   std::vector<charts::Chart> path;  ///< along the planned additions

@@ -140,7 +140,7 @@ TEST_CASE("every page's figures are in the chosen units", "[desktop]") {
   ask(desk, choice("densities", "°Bé"));
   CHECK(desk.view().additions.steps.back().what != in_kg);
   CHECK(desk.view().additions.additions.back().unit == "lb");
-  CHECK(desk.view().chemistry.figures.back().second.ends_with("°Bé"));
+  CHECK(desk.view().chemistry.figures.back().now.ends_with("°Bé"));
   const double planned = desk.view().additions.additions.back().amount;
   const int last = static_cast<int>(desk.view().additions.additions.size()) - 1;
   ask(desk, DragAmount{last, 2 * planned});  // in pounds, as it is shown

@@ -61,12 +61,16 @@ std::string levels_after(const dosing::Step& step, const bath::Tank& tank, const
 }  // namespace
 
 const dosing::Plan* shown_plan(const Worked& worked, int plan) {
-  if (worked.own && !worked.own->plans.empty()) return &worked.own->plans.front();
+  if (worked.own_of) return worked.own && !worked.own->plans.empty() ? &worked.own->plans.front() : nullptr;
   if (!worked.sheet || worked.sheet->plans.empty()) return nullptr;
   return &worked.sheet->plans[std::min(static_cast<std::size_t>(plan), worked.sheet->plans.size() - 1)];
 }
 
-StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units& units) {
+const bath::TankView* end_of(const Worked& worked) {
+  return worked.path.size() > 1 ? &worked.path.back().view : nullptr;
+}
+
+StateView state_view(const Worked& worked, const Units& units) {
   StateView view;
   if (!worked.shop || !worked.now) return view;
   const bath::Tank& tank = worked.shop->tank;
@@ -74,8 +78,8 @@ StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units
   const double pH = worked.analysed ? worked.analysed->analysis.pH : worked.now->pH;
   view.from = worked.analysed ? "from the readings above" : worked.read ? worked.read->from : "";
   const auto now = sheets::judge(tank, type, worked.now->quantity_g_per_L, pH);
-  const auto then =
-      plan ? sheets::judge(tank, type, plan->final_view.quantity_g_per_L, plan->final_view.pH) : now;
+  const bath::TankView* end = end_of(worked);
+  const auto then = end ? sheets::judge(tank, type, end->quantity_g_per_L, end->pH) : now;
   for (std::size_t i = 0; i < now.size(); ++i) {
     const sheets::Judged& judged = now[i];
     const LevelUnit unit = unit_of(judged, type, &*worked.now, units);
@@ -85,9 +89,9 @@ StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units
     row.name = judged.label;
     row.unit = unit.symbol;
     row.strip = {judged.aim->low, judged.aim->aim, judged.aim->high, judged.found, std::nullopt, 0};
-    if (plan && !plan->additions.empty()) {
+    if (end) {
       row.strip.predicted = then[i].found;
-      row.predicted = fixed(unit_of(then[i], type, &plan->final_view, units).of(then[i].found), decimals);
+      row.predicted = fixed(unit_of(then[i], type, end, units).of(then[i].found), decimals);
     }
     if (worked.analysed)
       for (const auto& level : worked.analysed->analysis.reconciled)
@@ -101,53 +105,55 @@ StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units
   return view;
 }
 
-AdditionsView additions_view(const Worked& worked, int chosen,
-                             const std::vector<std::pair<std::string, double>>& edited, const Units& units) {
-  AdditionsView view;
-  const dosing::Plan* plan = shown_plan(worked, chosen);
-  if (!worked.shop || !worked.sheet || !plan) return view;
-  const bath::Tank& tank = worked.shop->tank;
-  const bath::BathType& type = worked.shop->type();
-  view.plan = chosen;
-  view.edited = !edited.empty();
-  const auto money = [&](double cost) {
-    return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);
+namespace {
+
+std::string money(double cost, const bath::Tank& tank) {
+  return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);
+}
+
+const dosing::Addition* of_chemical(const dosing::Plan& plan, const std::string& id) {
+  const auto addition = std::ranges::find(plan.additions, id, &dosing::Addition::chemical);
+  return addition == plan.additions.end() ? nullptr : &*addition;
+}
+
+/// What may be dragged: of the plan, or of the list a person made of it, with what the last check says it
+/// costs.
+std::vector<AdditionRow> amounts(const bath::Tank& tank, const dosing::Plan& planned,
+                                 const std::optional<OwnList>& own, const dosing::Plan* checked,
+                                 const Units& units) {
+  std::vector<AdditionRow> rows;
+  const auto add = [&](const std::string& name, const std::string& unit, double amount, double largest,
+                       const std::string& cost) {
+    const AmountUnit shown = units.amount_unit(unit);
+    rows.push_back({name, shown.symbol, amount * shown.per_one, largest * shown.per_one, cost});
   };
-  for (const dosing::Plan& one : worked.sheet->plans)
-    view.plans.push_back(
-        one.kind + ", " + money(one.cost) +
-        (one.chances ? ", " + fixed(100 * one.chances->in_every_window, 0) + " %" : std::string()));
-  for (const bath::ShelfItem& item : tank.shelf) view.shelf.emplace_back(item.stock.id, item.stock.name);
-  for (const std::string& id : matter::StockCatalogue::built_in().ids())
-    if (!tank.on_shelf(id))
-      view.shelf.emplace_back(id, stock_of(tank, id)->name + " (not on this tank's shelf)");
-  const dosing::Plan& planned =
-      worked.sheet->plans[std::min(static_cast<std::size_t>(chosen), worked.sheet->plans.size() - 1)];
-  const auto planned_amount = [&](const std::string& id) {
-    const auto addition = std::ranges::find(planned.additions, id, &dosing::Addition::chemical);
-    return addition == planned.additions.end() ? 0 : addition->amount;
-  };
-  const auto cost_of = [&](const std::string& id) {
-    const auto addition = std::ranges::find(plan->additions, id, &dosing::Addition::chemical);
-    return addition == plan->additions.end() ? std::string() : money(addition->cost);
-  };
-  if (edited.empty())
-    for (const dosing::Addition& addition : planned.additions) {
-      const AmountUnit unit = units.amount_unit(addition.unit);
-      const double amount = addition.amount * unit.per_one;
-      view.additions.push_back({addition.name, unit.symbol, amount, 2 * amount, money(addition.cost)});
-    }
-  for (const auto& [id, kg] : edited) {
-    const matter::StockChemical* stock = stock_of(tank, id);
-    const double amount = stock->liquid ? kg / stock->kg_per_L : kg, planned_one = planned_amount(id);
-    constexpr double usual = 25;  // a bag
-    const AmountUnit unit = units.amount_unit(stock->liquid ? "L" : "kg");
-    view.additions.push_back({stock->name, unit.symbol, amount * unit.per_one,
-                              unit.per_one * (planned_one > 0 ? 2 * planned_one : std::max(usual, amount)),
-                              cost_of(id)});
+  if (planned.decant_L > 0) {
+    const double litres = own ? own->take_out_L.value_or(0) : planned.decant_L;
+    add("bath taken out", "L", litres, 2 * planned.decant_L,
+        money(litres * tank.dosing.waste_price_per_L, tank));
   }
+  if (!own)
+    for (const dosing::Addition& addition : planned.additions)
+      add(addition.name, addition.unit, addition.amount, 2 * addition.amount, money(addition.cost, tank));
+  else
+    for (const auto& [id, kg] : own->kg) {
+      const matter::StockChemical* stock = stock_of(tank, id);
+      const dosing::Addition* before = of_chemical(planned, id);
+      const dosing::Addition* priced = checked ? of_chemical(*checked, id) : nullptr;
+      const double amount = stock->liquid ? kg / stock->kg_per_L : kg;
+      constexpr double usual = 25;  // a bag
+      add(stock->name, stock->liquid ? "L" : "kg", amount,
+          before ? 2 * before->amount : std::max(usual, amount),
+          priced && priced->kg > 0 ? money(priced->cost * kg / priced->kg, tank) : "");
+    }
+  return rows;
+}
+
+std::vector<StepRow> steps_of(const dosing::Plan& plan, const bath::Tank& tank, const bath::BathType& type,
+                              const Units& units) {
+  std::vector<StepRow> rows;
   std::set<std::string> told;  // what to look at is said once, at the step it begins with
-  for (const dosing::Step& step : plan->steps) {
+  for (const dosing::Step& step : plan.steps) {
     StepRow row;
     row.number = std::to_string(step.number);
     row.what = units.amount(step.amount, step.unit) + " " + step.name;
@@ -161,25 +167,58 @@ AdditionsView additions_view(const Worked& worked, int chosen,
     }
     row.checks = static_cast<int>(step.checks.size());
     row.refused = !row.stops.empty();
-    view.steps.push_back(std::move(row));
+    rows.push_back(std::move(row));
   }
+  return rows;
+}
+
+/// Whether the plan may be signed for, or why not.
+std::string verdict(const dosing::Plan* plan, bool checked, const work::Analysed& analysed) {
+  if (!checked) return "the list is being checked";
+  if (!plan || !plan->feasible) return "not as it stands: see what stops it";
+  if (plan->additions.empty()) return "nothing to add";
+  if (!analysed.analysis.suspects.empty()) return "a reading is suspect: settle that first";
+  if (!analysed.changed_since.empty()) return "the log has later changes: analyse the tank as it is now";
+  return "";
+}
+
+}  // namespace
+
+AdditionsView additions_view(const Worked& worked, int chosen, const std::optional<OwnList>& own,
+                             const Units& units) {
+  AdditionsView view;
+  if (!worked.shop || !worked.analysed || !worked.sheet || worked.sheet->plans.empty()) return view;
+  const bath::Tank& tank = worked.shop->tank;
+  view.plan = chosen;
+  view.edited = own.has_value();
+  view.checked = worked.own_of == own;
+  for (const dosing::Plan& one : worked.sheet->plans)
+    view.plans.push_back(
+        one.kind + ", " + money(one.cost, tank) +
+        (one.chances ? ", " + fixed(100 * one.chances->in_every_window, 0) + " %" : std::string()));
+  for (const bath::ShelfItem& item : tank.shelf) view.shelf.emplace_back(item.stock.id, item.stock.name);
+  for (const std::string& id : matter::StockCatalogue::built_in().ids())
+    if (!tank.on_shelf(id))
+      view.shelf.emplace_back(id, stock_of(tank, id)->name + " (not on this tank's shelf)");
+  const dosing::Plan* plan = shown_plan(worked, chosen);
+  const dosing::Plan& planned =
+      worked.sheet->plans[std::min(static_cast<std::size_t>(chosen), worked.sheet->plans.size() - 1)];
+  view.additions = amounts(tank, planned, own, plan, units);
   const dosing::AdditionSheet& sheet = worked.own ? *worked.own : *worked.sheet;
   for (const dosing::Refusal& refusal : sheet.refused)
     view.refused.push_back(pretty_words(refusal.reason + " (" + refusal.rule + ")"));
+  for (const Problem& problem : worked.own_problems) view.refused.push_back(pretty_words(problem.text()));
   view.cautions = sheet.cautions;
+  const std::string hindrance = verdict(plan, view.checked, *worked.analysed);
+  view.ready = hindrance.empty();
+  view.verdict = view.ready ? "ready: a second person approves it" : hindrance;
+  if (!plan) return view;
+  view.steps = steps_of(*plan, tank, worked.shop->type(), units);
   view.unmet = plan->unmet;
+  view.conflicts = plan->conflicts;
   if (plan->chances)
     view.chance = fixed(100 * plan->chances->in_every_window, 0) + " % chance of ending inside every window" +
                   (plan->second_look ? "; worth a second look: " + pretty(plan->second_look->at) : "");
-  view.conflicts = plan->conflicts;
-  view.ready = plan->feasible && !plan->additions.empty() && worked.analysed->analysis.suspects.empty() &&
-               worked.analysed->changed_since.empty();
-  view.verdict = !plan->feasible                               ? "not as it stands: see what stops it"
-                 : plan->additions.empty()                     ? "nothing to add"
-                 : !worked.analysed->analysis.suspects.empty() ? "a reading is suspect: settle that first"
-                 : !worked.analysed->changed_since.empty()
-                     ? "the log has later changes: analyse the tank as it is now"
-                     : "ready: a second person approves it";
   return view;
 }
 

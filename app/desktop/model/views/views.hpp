@@ -15,9 +15,8 @@ namespace bathwright::desktop {
 [[nodiscard]] LineView line_view(const ShopFolder& shop, const LogNow& log, int selected);
 [[nodiscard]] ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row,
                                          const Worked* worked, const Units& units);
-[[nodiscard]] StateView state_view(const Worked& worked, const dosing::Plan* plan, const Units& units);
-[[nodiscard]] AdditionsView additions_view(const Worked& worked, int plan,
-                                           const std::vector<std::pair<std::string, double>>& edited,
+[[nodiscard]] StateView state_view(const Worked& worked, const Units& units);
+[[nodiscard]] AdditionsView additions_view(const Worked& worked, int plan, const std::optional<OwnList>& own,
                                            const Units& units);
 [[nodiscard]] SlipView slip_view(const std::optional<work::OpenSlip>& slip,
                                  const std::optional<shifts::Calendar>& calendar, const Units& units);
@@ -29,7 +28,11 @@ namespace bathwright::desktop {
 [[nodiscard]] TrendsView trends_view(const TrendsAnswer& answer, const bath::BathType* type,
                                      const Units& units);
 
-/// The plan that is shown: the edited one, else the chosen one; nullptr where there is none.
+/// The tank at the end of what is planned, as the path has it; nullptr where nothing is to be added.
+[[nodiscard]] const bath::TankView* end_of(const Worked& worked);
+
+/// The plan that is shown: a person's list as it was checked last, else the chosen one; nullptr where there
+/// is none.
 [[nodiscard]] const dosing::Plan* shown_plan(const Worked& worked, int plan);
 
 }  // namespace bathwright::desktop

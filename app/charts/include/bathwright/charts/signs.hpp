@@ -33,8 +33,8 @@ struct StripSign {
 void draw_strip(Canvas& canvas, const Box& box, const StripSign& sign, const Palette& palette = day_palette);
 
 /// How near a solid is to forming: `of_saturation` 0 to 1 fills the bar, hatched toward the limit; 1 and more
-/// is full.
+/// is full. `then`: the same after what is planned, as a mark in the colour of what is predicted.
 void draw_headroom(Canvas& canvas, const Box& box, double of_saturation,
-                   const Palette& palette = day_palette);
+                   std::optional<double> then = std::nullopt, const Palette& palette = day_palette);
 
 }  // namespace bathwright::charts

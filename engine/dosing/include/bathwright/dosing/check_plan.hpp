@@ -17,9 +17,11 @@ struct Wanted {
 /// of kind "own list": `feasible` says whether it may be carried out, which is when nothing is refused and no
 /// check stops it; levels that end farther outside their windows than they are now stand under `unmet` and do
 /// not. What is refused stands in `refused` and has no step. There is no option that lets a refused chemical
-/// pass. Fails on an amount below zero, on a chemical the bath type knows no component for, and where a state
-/// cannot be solved.
+/// pass. `take_out_L` of bath go to the waste treatment before all of them. Fails on an amount below zero, on
+/// more bath than there is, on a chemical the bath type knows no component for, and where a state cannot be
+/// solved.
 Result<AdditionSheet> check_plan(const bath::Tank& tank, const bath::Chemistry& chemistry,
-                                 const bath::TankState& now, const std::vector<Wanted>& wanted);
+                                 const bath::TankState& now, const std::vector<Wanted>& wanted,
+                                 double take_out_L = 0);
 
 }  // namespace bathwright::dosing

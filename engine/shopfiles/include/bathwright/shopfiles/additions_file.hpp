@@ -2,6 +2,7 @@
 #pragma once
 
 #include <bathwright/base/result.hpp>
+#include <bathwright/units/quantity.hpp>
 #include <string>
 #include <string_view>
 #include <vector>
@@ -15,11 +16,16 @@ struct WrittenAddition {
   std::string where;     ///< "list.toml:5: addition", for messages
 };
 
+struct WrittenAdditions {
+  units::Litres take_out{0};  ///< of bath, before anything is added
+  std::vector<WrittenAddition> additions;
+};
+
 /// The additions of the TOML file at `path`, in their order; at least one. Fails with every problem of the
 /// file, with `file:line: key`.
-Result<std::vector<WrittenAddition>> read_additions(const std::string& path);
+Result<WrittenAdditions> read_additions(const std::string& path);
 
 /// The same from text already in memory; `name` stands for the file in messages.
-Result<std::vector<WrittenAddition>> read_additions_text(std::string_view name, std::string_view text);
+Result<WrittenAdditions> read_additions_text(std::string_view name, std::string_view text);
 
 }  // namespace bathwright::shopfiles
