@@ -338,11 +338,13 @@ void Desk::ask() {
   Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, own_, plan_, log_.last};
   if (draft_ && !nothing_typed(draft_->now())) {
     const std::filesystem::path file = draft_file().replace_extension(".toml");
-    if (const Outcome written =
-            work::write_whole(file, readings_text(draft_->now(), head_units(), line_of_row_));
-        !written) {
-      fault_ = text(written.problems());
-      return;
+    std::string text = readings_text(draft_->now(), head_units(), line_of_row_);
+    if (std::pair written{file, std::move(text)}; written != readings_) {  // a drag changes no reading
+      if (const Outcome kept = work::write_whole(written.first, written.second); !kept) {
+        fault_ = bathwright::text(kept.problems());
+        return;
+      }
+      readings_ = std::move(written);
     }
     question.readings_file = file;
   }

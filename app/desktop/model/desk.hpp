@@ -79,6 +79,8 @@ class Desk {
   std::optional<DraftHistory> draft_;
   Draft blank_;
   std::vector<int> line_of_row_;
+  std::pair<std::filesystem::path, std::string>
+      readings_;  ///< the file of what is typed, as it was written last
   int plan_ = 0;
   std::optional<OwnList> own_;  ///< the plan that is shown, changed by hand
   std::optional<Worked> worked_;
