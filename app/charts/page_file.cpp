@@ -2,10 +2,10 @@
 #include <cairo-svg.h>
 
 #include <algorithm>
+#include <bathwright/base/whole_file.hpp>
 #include <bathwright/charts/page_file.hpp>
 #include <cctype>
 #include <memory>
-#include <system_error>
 
 #include "cairo_canvas.hpp"
 
@@ -19,40 +19,40 @@ using Surface = std::unique_ptr<cairo_surface_t, ReleaseSurface>;
 
 constexpr double width = 1120;
 
-cairo_status_t finish(const Surface& surface) {
-  cairo_surface_finish(surface.get());
-  return cairo_surface_status(surface.get());
-}
-
-cairo_status_t write_svg(const std::string& file, const Page& page) {
-  const double height = usual_height(page, width);
-  const Surface surface(cairo_svg_surface_create(file.c_str(), width, height));
-  CairoCanvas canvas(surface.get(), 1);
-  draw(page, canvas, width, height);
-  return finish(surface);
-}
-
 cairo_status_t append(void* bytes, const unsigned char* data, unsigned int length) {
   static_cast<std::string*>(bytes)->append(reinterpret_cast<const char*>(data), length);
   return CAIRO_STATUS_SUCCESS;
 }
 
-cairo_status_t write_png(const std::string& file, const Page& page) {
+cairo_status_t finish(const Surface& surface) {
+  cairo_surface_finish(surface.get());
+  return cairo_surface_status(surface.get());
+}
+
+cairo_status_t write_svg(std::string& bytes, const Page& page) {
+  const double height = usual_height(page, width);
+  const Surface surface(cairo_svg_surface_create_for_stream(append, &bytes, width, height));
+  CairoCanvas canvas(surface.get(), 1);
+  draw(page, canvas, width, height);
+  return finish(surface);
+}
+
+cairo_status_t write_png(std::string& bytes, const Page& page) {
   constexpr double scale = 2;
   const double height = usual_height(page, width);
   const Surface surface(cairo_image_surface_create(CAIRO_FORMAT_RGB24, static_cast<int>(scale * width),
                                                    static_cast<int>(scale * height)));
   CairoCanvas canvas(surface.get(), scale);
   draw(page, canvas, width, height);
-  return cairo_surface_write_to_png(surface.get(), file.c_str());
+  return cairo_surface_write_to_png_stream(surface.get(), append, &bytes);
 }
 
 /// A4 lying, six charts a page.
-cairo_status_t write_pdf(const std::string& file, const Page& page) {
+cairo_status_t write_pdf(std::string& bytes, const Page& page) {
   constexpr double points_a_mm = 72 / 25.4, paper_width = 297 * points_a_mm, paper_height = 210 * points_a_mm;
   constexpr double scale = paper_width / width, height = paper_height / scale;
   constexpr std::size_t charts_a_page = 6;
-  const Surface surface(cairo_pdf_surface_create(file.c_str(), paper_width, paper_height));
+  const Surface surface(cairo_pdf_surface_create_for_stream(append, &bytes, paper_width, paper_height));
   CairoCanvas canvas(surface.get(), scale);
   const std::size_t pages =
       std::max<std::size_t>(1, (page.charts.size() + charts_a_page - 1) / charts_a_page);
@@ -70,14 +70,8 @@ cairo_status_t write_pdf(const std::string& file, const Page& page) {
 }  // namespace
 
 std::string svg_of(const Page& page) {
-  const double height = usual_height(page, width);
   std::string bytes;
-  {
-    const Surface surface(cairo_svg_surface_create_for_stream(append, &bytes, width, height));
-    CairoCanvas canvas(surface.get(), 1);
-    draw(page, canvas, width, height);
-    finish(surface);
-  }
+  write_svg(bytes, page);
   return bytes.substr(std::min(bytes.find("<svg"), bytes.size()));  // without the head of a file
 }
 
@@ -91,19 +85,11 @@ Outcome write_page(const std::filesystem::path& file, const Page& page) {
   if (!write)
     return Problem{Fault::bad_input, file.string(), "is no kind of picture that is written here",
                    "a name that ends in .svg, .png or .pdf", ""};
-  const std::filesystem::path draft = file.string() + ".part";
-  const cairo_status_t status = write(draft.string(), page);
-  std::error_code failed;
-  if (status == CAIRO_STATUS_SUCCESS) {
-    std::filesystem::rename(draft, file, failed);
-    if (!failed) return Done{};
-  }
-  std::error_code ignored;
-  std::filesystem::remove(draft, ignored);
-  return Problem{
-      Fault::io, file.string(),
-      std::string("could not be written: ") + (failed ? failed.message() : cairo_status_to_string(status)),
-      "", "Check the folder and its rights."};
+  std::string bytes;
+  if (const cairo_status_t status = write(bytes, page); status != CAIRO_STATUS_SUCCESS)
+    return Problem{Fault::io, file.string(),
+                   std::string("could not be drawn: ") + cairo_status_to_string(status), "", ""};
+  return write_whole(file, bytes);
 }
 
 }  // namespace bathwright::charts

@@ -2,7 +2,7 @@
 
 #include <CLI/CLI.hpp>
 
-#include "work/whole_file.hpp"
+#include <bathwright/base/whole_file.hpp>
 
 namespace bathwright::command {
 

@@ -8,16 +8,15 @@
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
 
+#include <bathwright/base/whole_file.hpp>
 #include "views/views.hpp"
 #include "work/constants.hpp"
 #include "work/demonstration.hpp"
 #include "work/dose_document.hpp"
 #include "work/hand_over_document.hpp"
-#include "work/print_command.hpp"
 #include "work/slip.hpp"
 #include "work/user_folders.hpp"
 #include "work/what_must_not_meet.hpp"
-#include "work/whole_file.hpp"
 
 namespace bathwright::desktop {
 namespace {
@@ -76,10 +75,7 @@ Desk::Desk(work::Session session, const std::filesystem::path& shop, std::functi
                   wake_),
       bath_types_job_([](const BathTypesQuestion& question, const std::stop_token&,
                          const auto& give) { read_bath_types(question, give); },
-                      wake_),
-      preview_job_([](const std::shared_ptr<const PrintedSheet>& sheet, const std::stop_token&,
-                      const auto& give) { give(preview_of(*sheet)); },
-                   wake_) {
+                      wake_) {
   const std::filesystem::path& folder = shop.empty() ? settings_.shop : shop;
   if (!folder.empty()) open_shop(folder, !shop.empty());
   show();
@@ -91,7 +87,7 @@ const bath::Tank* Desk::tank() const {
 
 bool Desk::working() const {
   return tank_job_.working() || log_job_.working() || forecast_job_.working() || trends_job_.working() ||
-         bath_types_job_.working() || preview_job_.working() || printing_.busy() || signing_.busy();
+         bath_types_job_.working() || printing_.working() || signing_.busy();
 }
 
 HeadUnits Desk::head_units() const {
@@ -120,6 +116,7 @@ void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
     settings_.shop = std::filesystem::absolute(folder);
     settings_changed();
   }
+  printing_.look_in(std::filesystem::path(session_.log_file).parent_path() / "printed");
   log_ = {};
   open_tank(0);
 }
@@ -150,7 +147,7 @@ void Desk::handle(const Intent& intent) {
   changed_ = true;
   std::visit(Overloaded{[&](const GoTo& to) {
                           view_.page = to.page;
-                          close_printed();
+                          printing_.close();
                           fault_.clear();
                           said_.clear();
                           if (to.page == PageName::forecast && !forecasted_) ask_forecast();
@@ -162,7 +159,7 @@ void Desk::handle(const Intent& intent) {
                         },
                         [&](const OpenTank& open) {
                           fault_.clear();
-                          close_printed();
+                          printing_.close();
                           if (open.tank != open_) open_tank(open.tank);
                         },
                         [&](const TypeReading& typed) {
@@ -246,9 +243,9 @@ void Desk::handle(const Intent& intent) {
                         },
                         [&](const SaveCharts& asked) { save(asked); },
                         [&](const PrintForecast&) { print_forecast(); },
-                        [&](const ShowPrinted&) { show_printed(); },
-                        [&](const ClosePrinted&) { close_printed(); },
-                        [&](const PrintSheet&) { print_sheet(); },
+                        [&](const ShowPrinted&) { printing_.show(); },
+                        [&](const ClosePrinted&) { printing_.close(); },
+                        [&](const PrintSheet& asked) { printing_.send(settings_.print_command, asked.file); },
                         [&](const SetPrintCommand& asked) {
                           settings_.print_command = asked.command;
                           settings_changed();
@@ -340,7 +337,7 @@ void Desk::ask() {
     const std::filesystem::path file = draft_file().replace_extension(".toml");
     std::string text = readings_text(draft_->now(), head_units(), line_of_row_);
     if (std::pair written{file, std::move(text)}; written != readings_) {  // a drag changes no reading
-      if (const Outcome kept = work::write_whole(written.first, written.second); !kept) {
+      if (const Outcome kept = write_whole(written.first, written.second); !kept) {
         fault_ = bathwright::text(kept.problems());
         return;
       }
@@ -417,7 +414,7 @@ void Desk::issue_slip(const Names& names) {
   being_printed_ = std::make_shared<PrintedSheet>();
   signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_,
                   printed = being_printed_, paper = paper_of(settings_),
-                  folder = printed()]() -> Result<std::string> {
+                  folder = printing_.folder()]() -> Result<std::string> {
     // The log may have gone on since the readings were worked out.
     const auto fresh = work::analyse(session, *worked.shop, worked.readings_file.string());
     if (!fresh) return fresh.problems();
@@ -515,7 +512,7 @@ void Desk::hand_over(const Names& names) {
   being_printed_ = std::make_shared<PrintedSheet>();
   signing_.start([session = signed_by(session_, names), told = *log_.told, calendar = *log_.calendar,
                   printed = being_printed_, paper = paper_of(settings_),
-                  folder = printed()]() -> Result<std::string> {
+                  folder = printing_.folder()]() -> Result<std::string> {
     logbook::NewEntry entry;
     entry.kind = logbook::EntryKind::hand_over;
     entry.body = work::text_of(work::hand_over_document(told));
@@ -550,39 +547,12 @@ void Desk::save(const SaveCharts& asked) {
 void Desk::print_forecast() {
   if (!forecasted_ || !forecasted_->sheet) return;
   const std::string name = "forecast-" + forecasted_->tank_file.stem().string() + ".pdf";
-  printed_sheet_ = std::make_shared<const PrintedSheet>(
-      PrintedSheet{*forecasted_->sheet, paper_of(settings_), printed() / name});
+  const auto sheet = std::make_shared<const PrintedSheet>(
+      PrintedSheet{*forecasted_->sheet, paper_of(settings_), printing_.folder() / name});
   fault_.clear();
-  said_ = print(*printed_sheet_);
-  show_printed();
-}
-
-void Desk::show_printed() {
-  if (!printed_sheet_) return;
-  shows_printed_ = true;
-  preview_.reset();
-  print_said_.clear();
-  print_fault_.clear();
-  preview_job_.ask(printed_sheet_);
-}
-
-void Desk::close_printed() {
-  shows_printed_ = false;
-  preview_.reset();
-}
-
-void Desk::print_sheet() {
-  if (!printed_sheet_ || printing_.busy()) return;
-  print_said_.clear();
-  print_fault_.clear();
-  printing_.start([command = settings_.print_command, file = printed_sheet_->file]() -> Result<std::string> {
-    if (const Outcome sent = work::print_file(command, file); !sent) return sent.problems();
-    return "Sent to the printer: " + file.filename().string() + ".";
-  });
-}
-
-std::filesystem::path Desk::printed() const {
-  return std::filesystem::path(session_.log_file).parent_path() / "printed";
+  said_ = print(*sheet);
+  printing_.add(sheet);
+  printing_.show();
 }
 
 bool Desk::update() {
@@ -627,19 +597,11 @@ bool Desk::update() {
     view_.bath_types.rows = std::move(answer->rows);
     examined_ = std::move(answer->examination);
   }
-  if (auto answer = preview_job_.take()) {
-    changed_ = true;
-    preview_ = std::move(answer);
-    print_fault_ = text(preview_->problems);
-  }
-  if (auto came = printing_.take()) {
-    changed_ = true;
-    (*came ? print_said_ : print_fault_) = *came ? **came : text(came->problems());
-  }
+  if (printing_.update()) changed_ = true;
   if (auto came = signing_.take()) {
     changed_ = true;
     const auto sheet = std::exchange(being_printed_, nullptr);
-    if (sheet && !sheet->file.empty()) printed_sheet_ = sheet;
+    if (sheet && !sheet->file.empty()) printing_.add(sheet);
     if (*came) {
       said_ = **came;
       fault_.clear();
@@ -712,14 +674,7 @@ void Desk::show() {
   view_.log.file = session_.log_file;
   view_.log.shown = shown_entry_;
   view_.hand_over = {log_.hand_over_text, log_.calendar.has_value()};
-  view_.printed = {printed_sheet_ ? printed_sheet_->file.string() : "",
-                   shows_printed_,
-                   printing_.busy(),
-                   settings_.print_command,
-                   print_said_,
-                   print_fault_,
-                   {}};
-  if (preview_) view_.printed.sheets = preview_->sheets;
+  view_.printed = printing_.view(settings_.print_command);
   view_.bath_types.working = bath_types_job_.working();
   view_.bath_types.examined.reset();
   if (examined_) view_.bath_types.examined = examined_view(*examined_);

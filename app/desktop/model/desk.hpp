@@ -9,7 +9,7 @@
 #include "forecast_work.hpp"
 #include "latest_job.hpp"
 #include "log_work.hpp"
-#include "preview_work.hpp"
+#include "printing.hpp"
 #include "reading_draft.hpp"
 #include "settings.hpp"
 #include "shop_folder.hpp"
@@ -58,11 +58,6 @@ class Desk {
   void hand_over(const Names& names);
   void save(const SaveCharts& save);
   void print_forecast();
-  void show_printed();
-  void close_printed();
-  void print_sheet();
-  /// Where slips and hand-overs go as PDF: beside the log.
-  [[nodiscard]] std::filesystem::path printed() const;
   void settings_changed();
   void show();
   [[nodiscard]] std::filesystem::path draft_file() const;
@@ -93,14 +88,11 @@ class Desk {
   std::optional<Forecasted> forecasted_;
   std::optional<TrendsAnswer> trended_;
   std::optional<Examination> examined_;
-  std::shared_ptr<PrintedSheet> being_printed_;        ///< filled by what is being signed
-  std::shared_ptr<const PrintedSheet> printed_sheet_;  ///< the last one
-  std::optional<Preview> preview_;
-  bool shows_printed_ = false;
-  std::string print_said_, print_fault_;
+  std::shared_ptr<PrintedSheet> being_printed_;  ///< filled by what is being signed
   DeskView view_;
   bool changed_ = true;
-  Signing signing_, printing_;
+  Signing signing_;
+  Printing printing_;
   ForecastWork forecast_work_;
   // Last: their threads use the works above and nothing else.
   LatestJob<Question, Worked> tank_job_;
@@ -108,7 +100,6 @@ class Desk {
   LatestJob<ForecastQuestion, Forecasted> forecast_job_;
   LatestJob<TrendsQuestion, TrendsAnswer> trends_job_;
   LatestJob<BathTypesQuestion, BathTypesAnswer> bath_types_job_;
-  LatestJob<std::shared_ptr<const PrintedSheet>, Preview> preview_job_;
 };
 
 }  // namespace bathwright::desktop

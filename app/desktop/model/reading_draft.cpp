@@ -11,7 +11,7 @@
 #include <system_error>
 #include <tuple>
 
-#include "work/whole_file.hpp"
+#include <bathwright/base/whole_file.hpp>
 
 namespace bathwright::desktop {
 namespace {
@@ -217,7 +217,7 @@ Outcome keep_draft(const std::filesystem::path& file, const Draft& draft) {
                     {"temperature", draft.temperature},
                     {"pH", draft.pH},
                     {"rows", std::move(rows)}};
-  return work::write_whole(file, all.dump(1, ' ', false, Json::error_handler_t::replace));
+  return write_whole(file, all.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 
 Result<std::optional<Draft>> kept_draft(const std::filesystem::path& file, const Draft& blank) {

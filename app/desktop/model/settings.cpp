@@ -5,7 +5,7 @@
 #include <iterator>
 #include <nlohmann/json.hpp>
 
-#include "work/whole_file.hpp"
+#include <bathwright/base/whole_file.hpp>
 
 namespace bathwright::desktop {
 
@@ -47,7 +47,7 @@ Outcome keep(const std::filesystem::path& file, const Settings& settings) {
                      {"mass", settings.mass},
                      {"liquid", settings.liquid},
                      {"density", settings.density}};
-  return work::write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
+  return write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 
 }  // namespace bathwright::desktop

@@ -119,9 +119,12 @@ struct SaveCharts {
   std::string file;
 };
 struct PrintForecast {};
-struct ShowPrinted {};  ///< the sheet that was printed last
+struct ShowPrinted {};  ///< the sheet that was printed last, and the files of those before
 struct ClosePrinted {};
-struct PrintSheet {};  ///< the one that is shown, on paper
+/// A file of what was printed, on paper.
+struct PrintSheet {
+  std::string file;
+};
 struct SetPrintCommand {
   std::string command;
 };

@@ -235,9 +235,10 @@ struct SettingsView {
   bool dark = false, letter = false;
 };
 
-/// The sheet that was printed last, and what is seen of it.
+/// What was printed: the last sheet as it is on paper, and the files of all.
 struct PrintedView {
-  std::string file;  ///< empty: none
+  std::string folder, file;        ///< of the sheet that is seen; empty: none since the window was opened
+  std::vector<std::string> files;  ///< of the folder, newest first
   bool open = false, printing = false;
   std::string command, said, fault;
   std::vector<std::shared_ptr<const sheets::Picture>> sheets;

@@ -181,12 +181,13 @@ TEST_CASE("what is printed is shown and sent to the print command", "[desktop]")
   CHECK(static_cast<double>(sheet.height) / sheet.width == Approx(297.0 / 210).epsilon(2e-3));
 
   ask(desk, SetPrintCommand{"cp {file} " + (home.path / "paper.pdf").string()});
-  ask(desk, PrintSheet{});
+  ask(desk, PrintSheet{desk.view().printed.file});
   CHECK(desk.view().printed.fault.empty());
   CHECK_FALSE(desk.view().printed.said.empty());
-  CHECK(fs::file_size(home.path / "paper.pdf") == fs::file_size(desk.view().printed.file));
+  CHECK(fs::file_size(home.path / "paper.pdf") ==
+        fs::file_size(fs::path(desk.view().printed.folder) / desk.view().printed.file));
   ask(desk, SetPrintCommand{"no-such-printer"});
-  ask(desk, PrintSheet{});
+  ask(desk, PrintSheet{desk.view().printed.file});
   CHECK(desk.view().printed.said.empty());
   CHECK(desk.view().printed.fault.find("could not be started") != std::string::npos);
   ask(desk, ClosePrinted{});
@@ -206,8 +207,9 @@ TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
   ask(desk, MoveLever{0, 50});
   ask(desk, PrintForecast{});
   CHECK(desk.view().printed.open);
-  CHECK(desk.view().printed.file == (home.path / "printed/forecast-al-1.pdf").string());
-  CHECK(fs::file_size(desk.view().printed.file) > 10000);
+  CHECK(desk.view().printed.file == "forecast-al-1.pdf");
+  CHECK(desk.view().printed.folder == (home.path / "printed").string());
+  CHECK(fs::file_size(fs::path(desk.view().printed.folder) / desk.view().printed.file) > 10000);
   CHECK_FALSE(desk.view().printed.sheets.empty());
   ask(desk, GoTo{PageName::log});
   CHECK_FALSE(desk.view().printed.open);

@@ -264,7 +264,9 @@ TEST_CASE("a printed sheet stands in the place of the page until it is left", "[
   view.slip.number = 118;
   unseen.picture(view);
   CHECK(unseen.places.count("Show the printed sheet") == 0);  // nothing was printed
-  view.printed.file = "/shop/printed/slip-118.pdf";
+  view.printed.folder = "/shop/printed";
+  view.printed.file = "slip-118.pdf";
+  view.printed.files = {"slip-118.pdf", "hand-over-112.pdf"};
   CHECK(count<ShowPrinted>(unseen.click(view, "Show the printed sheet")) == 1);
   view.printed.open = true;
   view.printed.sheets = {std::make_shared<const sheets::Picture>(sheets::Picture{500, 700, {}})};

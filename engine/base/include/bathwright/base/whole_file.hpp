@@ -5,9 +5,9 @@
 #include <filesystem>
 #include <string_view>
 
-namespace bathwright::work {
+namespace bathwright {
 
 /// Writes a neighbour and renames it; makes the folder. Fails (io).
 Outcome write_whole(const std::filesystem::path& file, std::string_view contents);
 
-}  // namespace bathwright::work
+}  // namespace bathwright

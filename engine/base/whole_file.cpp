@@ -1,9 +1,9 @@
-#include "whole_file.hpp"
+#include <bathwright/base/whole_file.hpp>
 
 #include <fstream>
 #include <system_error>
 
-namespace bathwright::work {
+namespace bathwright {
 
 Outcome write_whole(const std::filesystem::path& file, std::string_view contents) {
   std::error_code failed;
@@ -22,4 +22,4 @@ Outcome write_whole(const std::filesystem::path& file, std::string_view contents
   return Done{};
 }
 
-}  // namespace bathwright::work
+}  // namespace bathwright
