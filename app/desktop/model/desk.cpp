@@ -57,7 +57,7 @@ Desk::Desk(work::Session session, const std::filesystem::path& shop, std::functi
       given_log_(session_.log_file),
       wake_(std::move(wake)),
       settings_(kept_settings(settings_file())),
-      units_(settings_),
+      units_(settings_.units),
       signing_(wake_),
       printing_(wake_),
       tank_job_(
@@ -91,7 +91,7 @@ bool Desk::working() const {
 }
 
 HeadUnits Desk::head_units() const {
-  HeadUnits heads{settings_.volume, settings_.temperature, {}};
+  HeadUnits heads{settings_.units.volume, settings_.units.temperature, {}};
   if (worked_ && worked_->shop)
     for (const bath::Quantity& quantity : worked_->shop->type().quantities)
       heads.value[quantity.id] = units_.typed(quantity);
@@ -268,9 +268,10 @@ void Desk::handle(const Intent& intent) {
                         },
                         [&](const SetUnit& set) {
                           if (draft_) draft_->write_out(head_units());
-                          const UnitChoice& choice = unit_choices().at(static_cast<std::size_t>(set.which));
-                          settings_.*choice.kept = choice.all.at(static_cast<std::size_t>(set.chosen));
-                          units_ = Units(settings_);
+                          const sheets::UnitChoice& choice =
+                              sheets::unit_choices().at(static_cast<std::size_t>(set.which));
+                          settings_.units.*choice.kept = choice.all.at(static_cast<std::size_t>(set.chosen));
+                          units_ = sheets::Units(settings_.units);
                           settings_changed();
                           ask();
                         }},
@@ -624,8 +625,9 @@ void Desk::show() {
   view_.fault = fault_;
   view_.settings = {settings_.shop.string(), session_.log_file, settings_.print_command, {},
                     settings_.scale,         settings_.dark,    settings_.letter};
-  for (const UnitChoice& choice : unit_choices())
-    view_.settings.units.push_back({choice.what, choice.all, index_of(choice.all, settings_.*choice.kept)});
+  for (const sheets::UnitChoice& choice : sheets::unit_choices())
+    view_.settings.units.push_back(
+        {choice.what, choice.all, index_of(choice.all, settings_.units.*choice.kept)});
   if (open_ < 0) return;
   view_.status.doing = signing_.busy()           ? "signing ..."
                        : forecast_job_.working() ? "forecasting ..."
@@ -645,7 +647,7 @@ void Desk::show() {
   view_.readings.can_undo = draft_ && draft_->can_undo();
   view_.readings.can_redo = draft_ && draft_->can_redo();
   view_.readings.working = tank_job_.working();
-  view_.readings.units = {settings_.volume, settings_.temperature};
+  view_.readings.units = {settings_.units.volume, settings_.units.temperature};
   if (!draft_ && worked)
     for (const Problem& problem : worked->problems) view_.readings.faults.push_back(problem.text());
   view_.state = worked ? state_view(*worked, units_) : StateView{};

@@ -16,7 +16,6 @@
 #include "signing.hpp"
 #include "tank_work.hpp"
 #include "trends_work.hpp"
-#include "units.hpp"
 
 namespace bathwright::desktop {
 
@@ -68,7 +67,7 @@ class Desk {
   std::string given_log_;  ///< --log; empty: the shop's usual one
   std::function<void()> wake_;
   Settings settings_;
-  Units units_;
+  sheets::Units units_;
   ShopFolder shop_;
   int open_ = -1;
   std::optional<DraftHistory> draft_;

@@ -20,14 +20,15 @@ Settings kept_settings(const std::filesystem::path& file) {
     return kept.contains(key) && kept[key].is_string() ? kept[key].get<std::string>() : otherwise;
   };
   settings.shop = text("shop", "");
-  settings.concentration = text("concentration", settings.concentration);
-  settings.volume = text("volume", settings.volume);
-  settings.temperature = text("temperature", settings.temperature);
+  settings.units.concentration = text("concentration", settings.units.concentration);
+  settings.units.volume = text("volume", settings.units.volume);
+  settings.units.temperature = text("temperature", settings.units.temperature);
   settings.print_command = text("print_command", settings.print_command);
-  settings.mass = text("mass", settings.mass);
-  settings.liquid = text("liquid", settings.liquid);
-  settings.density = text("density", settings.density);
-  if (settings.concentration == "oz/gal") settings.concentration = "oz/US gal";  // as it was called before
+  settings.units.mass = text("mass", settings.units.mass);
+  settings.units.liquid = text("liquid", settings.units.liquid);
+  settings.units.density = text("density", settings.units.density);
+  if (settings.units.concentration == "oz/gal")
+    settings.units.concentration = "oz/US gal";  // as it was called before
   if (kept.contains("scale") && kept["scale"].is_number())
     settings.scale = std::clamp(kept["scale"].get<float>(), 0.0F, 2.0F);
   settings.dark = kept.contains("dark") && kept["dark"] == true;
@@ -41,12 +42,12 @@ Outcome keep(const std::filesystem::path& file, const Settings& settings) {
                      {"dark", settings.dark},
                      {"letter", settings.letter},
                      {"print_command", settings.print_command},
-                     {"concentration", settings.concentration},
-                     {"volume", settings.volume},
-                     {"temperature", settings.temperature},
-                     {"mass", settings.mass},
-                     {"liquid", settings.liquid},
-                     {"density", settings.density}};
+                     {"concentration", settings.units.concentration},
+                     {"volume", settings.units.volume},
+                     {"temperature", settings.units.temperature},
+                     {"mass", settings.units.mass},
+                     {"liquid", settings.units.liquid},
+                     {"density", settings.units.density}};
   return write_whole(file, kept.dump(1, ' ', false, Json::error_handler_t::replace));
 }
 

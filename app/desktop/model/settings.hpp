@@ -2,6 +2,7 @@
 #pragma once
 
 #include <bathwright/base/result.hpp>
+#include <bathwright/sheets/shown_units.hpp>
 #include <filesystem>
 #include <string>
 
@@ -13,8 +14,7 @@ struct Settings {
   bool dark = false;
   std::string print_command = "lp";
   bool letter = false;  ///< slips and hand-overs are printed on Letter, else on A4
-  std::string concentration = "g/L", volume = "L", temperature = "°C";  ///< the choices of units.hpp
-  std::string mass = "kg", liquid = "L", density = "kg/L";
+  sheets::UnitNames units;
 };
 
 /// As kept by the last run; the defaults where nothing was kept or it cannot be read.

@@ -100,8 +100,8 @@ void type_the_readings(Desk& desk) {
 }
 
 SetUnit choice(const std::string& what, const std::string& unit) {
-  const auto& all = unit_choices();
-  const auto which = std::ranges::find(all, what, &UnitChoice::what);
+  const auto& all = sheets::unit_choices();
+  const auto which = std::ranges::find(all, what, &sheets::UnitChoice::what);
   REQUIRE(which != all.end());
   const auto chosen = std::ranges::find(which->all, unit);
   REQUIRE(chosen != which->all.end());

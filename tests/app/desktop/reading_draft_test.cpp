@@ -94,3 +94,22 @@ TEST_CASE("typed readings are there after a crash", "[unit][desktop]") {
   std::filesystem::remove_all(file.parent_path());
   CHECK_FALSE((*kept_draft(file, blank)).has_value());
 }
+
+TEST_CASE("a bare number keeps its meaning when another unit is chosen", "[unit][desktop]") {
+  Draft draft;
+  draft.volume = "620";
+  draft.temperature = "130";
+  draft.rows = {{"Ni^2+", {""}, 0, "", "", "", "9.4"}, {"Cl^-", {""}, 0, "", "", "", "14.3 g/L"}};
+  DraftHistory history(draft);
+  history.type({0, Field::value, "9,5"}, "");
+  const HeadUnits heads{"US gal", "°F", {{"Ni^2+", "oz/US gal"}}};
+  history.write_out(heads);
+  CHECK(history.now().volume == "620 US gal");
+  CHECK(history.now().temperature == "130 °F");
+  CHECK(history.now().rows[0].value == "9,5 oz/US gal");
+  CHECK(history.now().rows[1].value == "14.3 g/L");
+  history.undo();
+  CHECK(history.now().rows[0].value == "9.4 oz/US gal");
+  draft.volume = "3 cm";
+  CHECK(with_units(draft, heads).volume == "3 cm");
+}

@@ -1,6 +1,8 @@
 // From what was worked out to what the panels show, in words.
 #pragma once
 
+#include <bathwright/sheets/shown_units.hpp>
+
 #include "../../panels/view.hpp"
 #include "../forecast_work.hpp"
 #include "../log_work.hpp"
@@ -8,9 +10,12 @@
 #include "../shop_folder.hpp"
 #include "../tank_work.hpp"
 #include "../trends_work.hpp"
-#include "../units.hpp"
 
 namespace bathwright::desktop {
+
+using sheets::AmountUnit;
+using sheets::LevelUnit;
+using sheets::Units;
 
 [[nodiscard]] LineView line_view(const ShopFolder& shop, const LogNow& log, int selected);
 [[nodiscard]] ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row,

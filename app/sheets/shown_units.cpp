@@ -1,18 +1,17 @@
-#include "units.hpp"
-
 #include <algorithm>
 #include <bathwright/matter/concentration.hpp>
 #include <bathwright/sheets/names.hpp>
+#include <bathwright/sheets/shown_units.hpp>
 #include <bathwright/units/read.hpp>
 #include <bathwright/units/show.hpp>
 #include <cmath>
 
-namespace bathwright::desktop {
+namespace bathwright::sheets {
 namespace {
 
 using units::ConcentrationUnit;
 
-/// A choice of the settings page and the engine's unit.
+/// A choice and the engine's unit.
 struct Chosen {
   const char* words;
   ConcentrationUnit unit;
@@ -59,20 +58,20 @@ double in_unit(double amount, const std::string& engine_unit, const std::string&
 
 const std::vector<UnitChoice>& unit_choices() {
   static const std::vector<UnitChoice> all{
-      {"concentrations", words_of_concentrations(), &Settings::concentration},
-      {"volumes", {"L", "US gal", "imp gal", "m3"}, &Settings::volume},
-      {"temperatures", {"°C", "°F"}, &Settings::temperature},
-      {"masses", {"kg", "g", "lb", "oz"}, &Settings::mass},
-      {"liquids", {"L", "mL", "US gal", "imp gal", "fl oz"}, &Settings::liquid},
-      {"densities", {"kg/L", "SG", "°Bé", "°Tw"}, &Settings::density}};
+      {"concentrations", words_of_concentrations(), &UnitNames::concentration},
+      {"volumes", {"L", "US gal", "imp gal", "m3"}, &UnitNames::volume},
+      {"temperatures", {"°C", "°F"}, &UnitNames::temperature},
+      {"masses", {"kg", "g", "lb", "oz"}, &UnitNames::mass},
+      {"liquids", {"L", "mL", "US gal", "imp gal", "fl oz"}, &UnitNames::liquid},
+      {"densities", {"kg/L", "SG", "°Bé", "°Tw"}, &UnitNames::density}};
   return all;
 }
 
-Units::Units(const Settings& settings) {
+Units::Units(const UnitNames& chosen) {
   std::vector<std::string*> mine{&concentration_, &volume_, &temperature_, &mass_, &liquid_, &density_};
   for (std::size_t i = 0; i < mine.size(); ++i) {
     const UnitChoice& choice = unit_choices()[i];
-    const std::string& wanted = settings.*choice.kept;
+    const std::string& wanted = chosen.*choice.kept;
     *mine[i] = std::ranges::find(choice.all, wanted) == choice.all.end() ? choice.all.front() : wanted;
   }
   per_litre_ = units::value_in(units::Litres{1}, volume_);
@@ -109,7 +108,7 @@ std::string Units::amount(double amount, const std::string& unit) const {
     shown.symbol = smaller(shown.symbol);
     shown.per_one = in_unit(1, unit, shown.symbol);
   }
-  return sheets::figure(amount * shown.per_one) + " " + shown.symbol;
+  return figure(amount * shown.per_one) + " " + shown.symbol;
 }
 
 bool Units::as_on_paper(const std::string& unit) const {
@@ -134,10 +133,10 @@ std::string Units::temperature(double celsius) const {
 
 std::string Units::density(double kg_per_L) const {
   const units::KilogramsPerLitre density{kg_per_L};
-  if (density_ == "°Bé") return sheets::fixed(units::value_in(density, "degBe"), 1) + " °Bé";
-  if (density_ == "°Tw") return sheets::fixed(units::value_in(density, "degTw"), 1) + " °Tw";
-  if (density_ == "SG") return sheets::fixed(units::value_in(density, "SG"), 3) + " SG";
-  return sheets::fixed(kg_per_L, 3) + " kg/L";
+  if (density_ == "°Bé") return fixed(units::value_in(density, "degBe"), 1) + " °Bé";
+  if (density_ == "°Tw") return fixed(units::value_in(density, "degTw"), 1) + " °Tw";
+  if (density_ == "SG") return fixed(units::value_in(density, "SG"), 3) + " SG";
+  return fixed(kg_per_L, 3) + " kg/L";
 }
 
 double equivalents_of(const bath::Quantity& quantity) {
@@ -157,4 +156,4 @@ std::optional<double> water_kg_per_L(const bath::TankView& view) {
   return view.density_kg_per_L / kg_per_kg_of_water;
 }
 
-}  // namespace bathwright::desktop
+}  // namespace bathwright::sheets

@@ -6,15 +6,19 @@
 #include <string>
 #include <vector>
 
-#include "settings.hpp"
+namespace bathwright::sheets {
 
-namespace bathwright::desktop {
+/// The unit chosen for each kind of figure, one of unit_choices().
+struct UnitNames {
+  std::string concentration = "g/L", volume = "L", temperature = "°C", mass = "kg", liquid = "L",
+              density = "kg/L";
+};
 
-/// What may be chosen for one kind of figure, as the settings page lists it; the first is the usual one.
+/// What may be chosen for one kind of figure; the first is the usual one.
 struct UnitChoice {
   std::string what;  ///< "concentrations"
   std::vector<std::string> all;
-  std::string Settings::*kept;
+  std::string UnitNames::*kept;
 };
 [[nodiscard]] const std::vector<UnitChoice>& unit_choices();
 
@@ -33,7 +37,7 @@ struct AmountUnit {
 
 class Units {
  public:
-  explicit Units(const Settings& settings = {});
+  explicit Units(const UnitNames& chosen = {});
 
   /// A level of a quantity. `in`: the solution it is in, for the units that need its density or its water;
   /// nullptr where nobody knows it. g/L where that is lacking, or for N where the quantity has no
@@ -70,4 +74,4 @@ class Units {
 /// density / (1 + sum m M / 1000). Nothing where the view has no species.
 [[nodiscard]] std::optional<double> water_kg_per_L(const bath::TankView& view);
 
-}  // namespace bathwright::desktop
+}  // namespace bathwright::sheets
