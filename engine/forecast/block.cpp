@@ -178,15 +178,18 @@ void Block::look(int day, const std::function<void(std::size_t, Day)>& see) {
                                                                          : bath::not_given;
   };
   const bath::Chemistry& c = p_.chemistry;
-  working_.each(paths, std::nullopt, [&](std::size_t at, const speciation::Equilibrium& answer, double) {
-    days[at].pH = answer.pH();
-    if (!answer.stable)
-      days[at].beyond = Beyond::curvature;
-    else if (answer.ionic_strength > p_.most_ionic_strength)
-      days[at].beyond = Beyond::ionic_strength;
-    if (paths_.size() == 1 && !indicative_) look_closer(day, answer);
-    for (const std::size_t k : p_.watched) days[at].working_log10.push_back(room(c.working(), answer, k));
-  });
+  working_.each(paths, std::nullopt,
+                [&](std::size_t at, const speciation::Equilibrium& answer, double scale) {
+                  days[at].pH = answer.pH();
+                  days[at].water_kg_per_L = answer.water_kg * scale / days[at].volume_L;
+                  if (!answer.stable)
+                    days[at].beyond = Beyond::curvature;
+                  else if (answer.ionic_strength > p_.most_ionic_strength)
+                    days[at].beyond = Beyond::ionic_strength;
+                  if (paths_.size() == 1 && !indicative_) look_closer(day, answer);
+                  for (const std::size_t k : p_.watched)
+                    days[at].working_log10.push_back(room(c.working(), answer, k));
+                });
   idle_.each(paths, std::nullopt, [&](std::size_t at, const speciation::Equilibrium& answer, double) {
     for (const std::size_t k : p_.watched) days[at].idle_log10.push_back(room(c.idle(), answer, k));
   });

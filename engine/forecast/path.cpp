@@ -460,6 +460,7 @@ Day Path::seen(int day) const {
   Day seen;
   seen.day = day;
   seen.volume_L = volume_L();
+  seen.density_kg_per_L = c.density(state_).v;
   for (const bath::Quantity& q : c.type().quantities)
     seen.quantity_g_per_L.push_back(c.quantity_mol(q, state_.component_mol) * q.formula.molar_mass().v /
                                     seen.volume_L);

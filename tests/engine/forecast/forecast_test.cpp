@@ -65,6 +65,20 @@ TEST_CASE("acid replaced by analysis carries its sulfate and its cost", "[unit][
   CHECK(kg == Approx((180 + q / B) * -std::expm1(-B / V) * V / 1000).epsilon(1e-5));
 }
 
+TEST_CASE("a day has the density and the water of its solution", "[unit][forecast]") {
+  const Anodizer shop;
+  const auto run = must(shop.ready().run(shop.start));
+  const forecast::Day& last = run.days.back();
+  const bath::TankView view = must(shop.chemistry.view(run.end));
+  CHECK(last.density_kg_per_L == Approx(view.density_kg_per_L).epsilon(1e-12));
+  // A litre weighs what its water weighs and what is dissolved in that.
+  double kg_per_kg_of_water = 1;
+  for (const bath::SpeciesView& species : view.species)
+    kg_per_kg_of_water += species.molality * must(matter::Formula::parse(species.name)).molar_mass().v / 1000;
+  CHECK(last.water_kg_per_L * kg_per_kg_of_water == Approx(last.density_kg_per_L).epsilon(1e-4));
+  CHECK(run.days.front().density_kg_per_L < last.density_kg_per_L);  // aluminium builds up
+}
+
 TEST_CASE("nothing is made and nothing is lost over ten thousand shifts", "[property][forecast]") {
   Anodizer shop;
   shop.tank.aims = {{"H2SO4", 180, 165, 200}};

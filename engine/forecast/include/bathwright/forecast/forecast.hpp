@@ -33,8 +33,9 @@ struct Day {
   std::vector<double> quantity_g_per_L;  ///< in the order of BathType::quantities
   Beyond beyond = Beyond::no;  ///< else, and on every later day, neither pH nor headroom is told (NaN)
   double pH = 0;
-  std::vector<double> working_log10, idle_log10;  ///< headroom, in the order of BathType::solids; NaN: none
-  double volume_L = 0;                            ///< the mark, unless what was put in stands above it
+  std::vector<double> working_log10, idle_log10;    ///< headroom, in the order of BathType::solids; NaN: none
+  double volume_L = 0;                              ///< the mark, unless what was put in stands above it
+  double density_kg_per_L = 0, water_kg_per_L = 0;  ///< at the working temperature; the second: liquid water
   double cost = 0;        ///< of everything put in since the start, water among it, the tank's currency
   double waste_L = 0;     ///< bled, decanted and run over since the start
   double drag_out_L = 0;  ///< since the start
