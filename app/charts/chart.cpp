@@ -11,6 +11,7 @@ namespace {
 // Room around the plot: the title above, figures to the left and below, names of lines to the right.
 constexpr double above = 26, below = 36, left_of = 52, right_of = 14, names = 96;
 constexpr double small_text = 12, plain_text = 13;
+constexpr double hatching_apart = 9;
 constexpr double pixels_a_tick_x = 56, pixels_a_tick_y = 28;
 
 struct Range {
@@ -125,19 +126,49 @@ class Drawing {
 
   /// Slanted lines where nobody should be, and the border of that.
   void forbid(const Limit& limit) {
+    if (!limit.x.empty()) return forbid_beyond(limit);
     const Box& plot = frame_.plot;
     const double y = y_of(limit.at);
     if (!(y > plot.top - 1 && y < plot.bottom() + 1)) return;
     const double top = limit.upper ? plot.top : y, bottom = limit.upper ? y : plot.bottom();
     canvas_.clip({plot.left, top, plot.width, bottom - top});
-    Colour faint = colours_.stop;
-    faint.alpha = 70;
     const double height = bottom - top;
-    constexpr double apart = 9;
-    for (double x = plot.left - height; x < plot.right(); x += apart)
-      segment({x, bottom}, {x + height, top}, {faint});
+    for (double x = plot.left - height; x < plot.right(); x += hatching_apart)
+      segment({x, bottom}, {x + height, top}, {hatching()});
     canvas_.clip(plot);
     segment({plot.left, y}, {plot.right(), y}, {colours_.stop, 1.5});
+  }
+
+  [[nodiscard]] Colour hatching() const {
+    Colour faint = colours_.stop;
+    faint.alpha = 70;
+    return faint;
+  }
+
+  /// The same beyond a border that moves: each slanted line ends where it meets the border, found in a few
+  /// rounds, for a border is far from steep.
+  void forbid_beyond(const Limit& limit) {
+    std::vector<Point> border;
+    for (std::size_t i = 0; i < limit.x.size(); ++i) border.push_back(frame_.at(limit.x[i], limit.y[i]));
+    const auto border_at = [&](double x) {
+      const auto after = std::ranges::lower_bound(border, x, {}, &Point::x);
+      if (after == border.begin()) return border.front().y;
+      if (after == border.end()) return border.back().y;
+      const Point before = *(after - 1);
+      return before.y + (after->y - before.y) * (x - before.x) / (after->x - before.x);
+    };
+    const Box& plot = frame_.plot;
+    constexpr int rounds = 6;
+    for (double x = plot.left - plot.height; x < plot.right(); x += hatching_apart) {
+      double up = 0;  // from the bottom to the border
+      for (int i = 0; i < rounds; ++i) up = std::clamp(plot.bottom() - border_at(x + up), 0.0, plot.height);
+      const Point meets{x + up, plot.bottom() - up};
+      if (limit.upper)
+        segment(meets, {x + plot.height, plot.top}, {hatching()});
+      else
+        segment({x, plot.bottom()}, meets, {hatching()});
+    }
+    canvas_.polyline(border, {colours_.stop, 1.5});
   }
 
   void draw_band(const Band& band) {

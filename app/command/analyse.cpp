@@ -17,7 +17,12 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   if (!analysed) return fail(context, analysed.problems());
   const analysis::Analysis& analysis = analysed->analysis;
   Json doc = analysis_document(shop->tank, shop->chemistry, analysis);
-  sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), analysis);
+  const sheets::Units units(context.units);
+  std::optional<double> water_kg_per_L;
+  if (units.needs_water())
+    if (const auto view = shop->chemistry.quick_view(analysis.state))
+      water_kg_per_L = sheets::water_kg_per_L(*view);
+  sheets::Lines lines = sheets::analysis_sheet(shop->tank, shop->type(), analysis, units, water_kg_per_L);
   if (!context.log_file.empty()) {
     const auto entry = entry_computed(*shop, readings_path, logbook::EntryKind::analysis, doc);
     if (!entry) return fail(context, entry.problems());
@@ -41,6 +46,7 @@ void add_analyse(CLI::App& program, Context& context, Action& action) {
       program.add_subcommand("analyse", "readings to concentrations with their uncertainty")->fallthrough();
   add_tank_and_readings(*verb, context, action, run);
   add_signature(*verb, context);
+  add_units(*verb, context);
   verb->footer(
       "Example: bathwright analyse baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
       "With --log the analysis is logged.\n");

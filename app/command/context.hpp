@@ -1,6 +1,7 @@
 // What every verb needs: the options that stand for all of them, how an answer is printed, how a run ends.
 #pragma once
 
+#include <bathwright/sheets/shown_units.hpp>
 #include <bathwright/sheets/text.hpp>
 #include <functional>
 
@@ -25,7 +26,8 @@ enum Exit : int {
 
 struct Context : work::Session {
   bool json = false;
-  std::string pin_file;  ///< empty: PINs are asked for at the terminal
+  sheets::UnitNames units;  ///< of what is printed for people
+  std::string pin_file;     ///< empty: PINs are asked for at the terminal
 };
 
 void print(const sheets::Lines& lines);

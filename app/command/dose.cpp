@@ -56,7 +56,8 @@ int run(const Context& context, const std::string& tank_path, const std::string&
     doc["logged_as"] = logged->entries;
     doc["slip"] = logged->slip ? Json(*logged->slip) : Json(nullptr);
   }
-  const sheets::Page page = page_of(context, *shop, {*analysed, *sheet, stops, *history, logged});
+  const sheets::Page page =
+      page_of(context, *shop, {*analysed, *sheet, stops, *history, logged, sheets::Units(context.units)});
   if (context.json) {
     print(doc);
   } else {
@@ -95,6 +96,7 @@ void add_dose(CLI::App& program, Context& context, Action& action) {
         return run(given, tank, readings, *options);
       });
   add_signature(*verb, context);
+  add_units(*verb, context);
   verb->footer(
       "Example: bathwright dose baths/n-07.toml baths/readings/n-07-morning.toml --log shift-log.sqlite\n"
       "With --log the analysis and the plan are logged; additions logged since are told. --slip numbers the plan:\n"

@@ -15,6 +15,7 @@
 #include <utility>
 
 #include "printed.hpp"
+#include "shared_options.hpp"
 #include "work/bleeds_to_hold.hpp"
 #include "work/tank_state.hpp"
 
@@ -289,7 +290,8 @@ int run(const Context& context, const Options& options) {
                             options.policy,
                             start->read.from,
                             {},
-                            {}};
+                            {},
+                            sheets::Units(context.units)};
   page.bleeds = bleeds_to_hold(*forecast, start->state, page.limits);
   if (options.samples > 0) {
     if (auto moved = forecast->sensitivity(start->state)) page.sensitivity = *std::move(moved);
@@ -337,6 +339,7 @@ void add_forecast(CLI::App& program, Context& context, Action& action) {
   verb->add_option("--csv", options->csv, "also write one row a day to this file");
   verb->add_option("--chart", options->chart, "also draw it: FILE.svg, FILE.png or FILE.pdf");
   add_printed_files(*verb, options->printed);
+  add_units(*verb, context);
   verb->footer(
       "Example: bathwright forecast baths/al-1.toml baths/policies/al-1.toml\n"
       "         bathwright forecast baths/e-02.toml baths/policies/e-02.toml --against "

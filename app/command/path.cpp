@@ -4,6 +4,7 @@
 #include <bathwright/units/read.hpp>
 
 #include "context.hpp"
+#include "shared_options.hpp"
 #include "work/documents.hpp"
 #include "work/tank_state.hpp"
 #include "work/wanted.hpp"
@@ -128,12 +129,13 @@ int run(const Context& context, const Options& options) {
   if (!points) return fail(context, points.problems());
   std::vector<sheets::PathAddition> additions;
   for (const Portion& portion : portions) additions.push_back(portion.addition);
-  auto findings = sheets::path_findings(shop->tank, shop->type(), additions, *points);
+  const sheets::Units units(context.json ? sheets::UnitNames() : context.units);
+  auto findings = sheets::path_findings(shop->tank, shop->type(), additions, *points, units);
   findings.insert(findings.begin(), gases->begin(), gases->end());
   if (context.json)
     print(json_of(*shop, additions, *points, start->read, findings));
   else
-    print(sheets::path_sheet(shop->tank, additions, *points, start->read.changed_since, findings));
+    print(sheets::path_sheet(shop->tank, additions, *points, start->read.changed_since, findings, units));
   return findings.empty() ? Exit::all_well : Exit::finding;
 }
 
@@ -148,6 +150,7 @@ void add_path(CLI::App& program, Context& context, Action& action) {
   verb->add_option("--steps", options->steps, "points for each addition")->check(CLI::Range(1, 1000));
   verb->add_option("--readings", options->readings, "start from these; else the last analysis, else the aims")
       ->check(CLI::ExistingFile);
+  add_units(*verb, context);
   verb->footer(
       "Example: bathwright path baths/n-07.toml --add \"4 kg boric-acid\" --add \"12 kg nickel-sulfate\"\n");
   verb->callback(

@@ -25,4 +25,15 @@ void add_signature(CLI::App& verb, Context& context) {
   verb.add_option("--shift", context.shift, "name of the shift; else the log's shift of this hour");
 }
 
+void add_units(CLI::App& verb, Context& context) {
+  verb.add_option_function<std::string>(
+      "--units",
+      [&context](const std::string& list) {
+        const auto units = sheets::unit_names(list);
+        if (!units) throw CLI::ValidationError(text(units.problems()));
+        context.units = *units;
+      },
+      "of what is printed, as \"oz/US gal, lb, US gal, degF\"; --json stays in g/L, kg, L and degC");
+}
+
 }  // namespace bathwright::command

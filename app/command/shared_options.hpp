@@ -13,4 +13,7 @@ void add_tank_and_readings(CLI::App& verb, Context& context, Action& action, Run
 /// --by, --witness, --pin-file and --shift, for verbs that log.
 void add_signature(CLI::App& verb, Context& context);
 
+/// --units, for verbs that print figures for people.
+void add_units(CLI::App& verb, Context& context);
+
 }  // namespace bathwright::command

@@ -4,6 +4,7 @@
 #include <bathwright/sheets/tank_sheet.hpp>
 
 #include "context.hpp"
+#include "shared_options.hpp"
 #include "work/documents.hpp"
 #include "work/tank_state.hpp"
 
@@ -79,7 +80,7 @@ int run(const Context& context, const std::string& tank_path, const std::string&
   if (context.json)
     print(json_of(*shop, *view, start->read));
   else
-    print(sheets::tank_sheet(shop->tank, shop->type(), *view, start->read));
+    print(sheets::tank_sheet(shop->tank, shop->type(), *view, start->read, sheets::Units(context.units)));
   const bool in_window =
       all_in_window(sheets::judge(shop->tank, shop->type(), view->quantity_g_per_L, start->read.pH));
   return in_window && start->read.changed_since.empty() &&
@@ -98,6 +99,7 @@ void add_tank(CLI::App& program, Context& context, Action& action) {
   verb->add_option("TANK", *tank, "the tank, TOML")->required()->check(CLI::ExistingFile);
   verb->add_option("--readings", *readings, "today's readings; else the book in --log, else the tank's aims")
       ->check(CLI::ExistingFile);
+  add_units(*verb, context);
   verb->footer("Example: bathwright tank baths/n-07.toml --readings baths/readings/n-07-morning.toml\n");
   verb->callback([&context, &action, tank, readings] {
     action = [&context, tank, readings] { return run(context, *tank, *readings); };

@@ -4,6 +4,8 @@
 #include <bathwright/shopfiles/tank_file.hpp>
 
 #include "printed.hpp"
+#include "shared_options.hpp"
+#include "work/shop.hpp"
 #include "work/trends.hpp"
 
 namespace bathwright::command {
@@ -19,7 +21,16 @@ int run(const Context& context, const Options& options) {
   if (!tank) return fail(context, tank.problems());
   const auto trends = trends_of(context, *tank, options.quantity);
   if (!trends) return fail(context, trends.problems());
-  const sheets::Page page = sheets::trends_page(*trends);
+  // What a level is told as in moles or equivalents, the bath type knows.
+  const sheets::Units units(context.units);
+  std::optional<Shop> shop;
+  if (!units.note().empty()) {
+    auto opened = open_shop(context, options.tank);
+    if (!opened) return fail(context, opened.problems());
+    shop = *std::move(opened);
+  }
+  const bath::BathType* type = shop ? &shop->type() : nullptr;
+  const sheets::Page page = sheets::trends_page(*trends, type, units);
   if (context.json)
     print(trends_document(*trends));
   else
@@ -27,7 +38,8 @@ int run(const Context& context, const Options& options) {
   if (Outcome written = write_printed(options.printed, page); !written)
     return fail(context, written.problems());
   if (!options.chart.empty())
-    if (Outcome written = charts::write_page(options.chart, sheets::trends_charts(*trends)); !written)
+    if (Outcome written = charts::write_page(options.chart, sheets::trends_charts(*trends, type, units));
+        !written)
       return fail(context, written.problems());
   return sheets::tells_something(*trends) ? Exit::finding : Exit::all_well;
 }
@@ -43,6 +55,7 @@ void add_trends(CLI::App& program, Context& context, Action& action) {
                    "this one alone, as NiSO4.6H2O; else all the tank aims at");
   verb->add_option("--chart", options->chart, "also draw it: FILE.svg, FILE.png or FILE.pdf");
   add_printed_files(*verb, options->printed);
+  add_units(*verb, context);
   verb->footer(
       "Example: bathwright trends baths/n-07.toml --log shift-log.sqlite --chart trends.png\n"
       "Exit status 1 where a rule is tripped.\n");

@@ -34,8 +34,8 @@ Page addition_page(const AdditionSlip& slip) {
       page.add(read_as(Reading::background, slip::expected_after_each(slip, plan)));
       page.add(read_as(Reading::small_print, slip::watch(plan)));
     }
-    page.add(read_as(Reading::small_print, slip::not_at_its_aim(plan)));
-    page.add(read_as(Reading::small_print, slip::bringing_down(plan)));
+    page.add(read_as(Reading::small_print, slip::not_at_its_aim(slip, plan)));
+    page.add(read_as(Reading::small_print, slip::bringing_down(slip, plan)));
   }
   page.add(read_as(Reading::background, slip::other_plans(slip)));
   page.add(read_as(Reading::small_print, slip::refused(slip)));

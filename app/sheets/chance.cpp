@@ -1,7 +1,6 @@
 #include <algorithm>
 #include <bathwright/sheets/chance.hpp>
 #include <bathwright/sheets/names.hpp>
-#include <bathwright/units/show.hpp>
 #include <cmath>
 
 namespace bathwright::sheets {
@@ -49,14 +48,14 @@ std::string chance_of_ending_inside(const bath::BathType& type, const dosing::Pl
   return text + "no second analysis would help much.";
 }
 
-std::string chance_of_staying_dissolved(const bath::Tank& tank, const dosing::Plan& plan) {
+std::string chance_of_staying_dissolved(const bath::Tank& tank, const dosing::Plan& plan,
+                                        const Units& units) {
   std::string text;
   if (!plan.chances) return text;
   for (const dosing::SolidChance& solid : plan.chances->solids) {
     if (!solid.working || *solid.working >= dosing::promised) continue;
     text +=
-        (text.empty() ? "Chance of staying dissolved at " + units::show(tank.temperature, "degC", 3) + ": "
-                      : ", ") +
+        (text.empty() ? "Chance of staying dissolved at " + units.degrees(tank.temperature) + ": " : ", ") +
         pretty(solid.solid) + " " + per_cent(*solid.working);
   }
   return text.empty() ? text : text + ".";

@@ -28,13 +28,6 @@ std::string figure(double value, int digits) {
   return std::isnan(value) ? "" : units::significant(value, digits);
 }
 
-std::string measured(double amount, const std::string& unit) {
-  constexpr int grams = 1000;
-  if (amount < 1 && unit == "kg") return figure(grams * amount) + " g";
-  if (amount < 1 && unit == "L") return figure(grams * amount) + " mL";
-  return figure(amount) + " " + unit;
-}
-
 std::string waiting(double hours) {
   constexpr double minutes = 60;
   return hours < 1 ? fixed(minutes * hours, 0) + " min" : figure(hours, 2) + " h";

@@ -10,18 +10,19 @@ namespace {
 
 constexpr double shown_molality = 1e-4;  // below it a species matters to no level
 
-std::string room(bool covers, double log10_room, double kg, const std::optional<double>& u_kg) {
+std::string room(bool covers, double log10_room, double kg, const std::optional<double>& u_kg,
+                 const AmountUnit& mass) {
   if (!covers) return "no data here";
   if (std::isnan(kg)) return (log10_room >= 0 ? "undersaturated" : "supersaturated");
-  return (kg < 0 ? "forms " : "room for ") + figure(std::abs(kg), 3) +
-         (u_kg ? " ± " + units::significant(*u_kg, 1) : "") + " kg";
+  return (kg < 0 ? "forms " : "room for ") + figure(std::abs(kg) * mass.per_one, 3) +
+         (u_kg ? " ± " + units::significant(*u_kg * mass.per_one, 1) : "") + " " + mass.symbol;
 }
 
 void add_if_over(std::vector<std::string>& out, const bath::Headroom& h, units::Celsius t, bool covers,
-                 double log10_room, double kg) {
+                 double log10_room, double kg, const Units& units) {
   if (!covers || !(log10_room < 0)) return;
-  std::string text = pretty(h.solid) + " at " + units::show(t, "degC", 3) + ": ";
-  text += std::isnan(kg) ? "supersaturated" : figure(-kg, 3) + " kg would crystallise";
+  std::string text = pretty(h.solid) + " at " + units.degrees(t) + ": ";
+  text += std::isnan(kg) ? "supersaturated" : units.mass(-kg, 3) + " would crystallise";
   if (h.slow) text += ", slowly";
   if (!h.sign_in_tank.empty()) text += " (" + h.sign_in_tank + ")";
   out.push_back(std::move(text));
@@ -29,36 +30,75 @@ void add_if_over(std::vector<std::string>& out, const bath::Headroom& h, units::
 
 }  // namespace
 
-void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Celsius temperature) {
+void tank_title(Lines& lines, const bath::Tank& tank, double volume_L, units::Celsius temperature,
+                const Units& units) {
   title(lines, tank.name + (tank.shop.empty() ? "" : ", " + tank.shop),
-        units::show(units::Litres{volume_L}, "L") + ", " + units::show(temperature, "degC", 3));
+        units.volume(volume_L) + ", " + units.degrees(temperature));
 }
 
-int decimals_of(const Judged& judged) {
+LevelUnit unit_of(const Judged& judged, const bath::BathType& type, const Units& units, const Medium& in) {
+  const bath::Quantity* quantity = judged.unit.empty() ? nullptr : type.quantity(judged.aim->quantity);
+  return quantity ? units.level(*quantity, in) : LevelUnit{judged.unit, 1};
+}
+
+std::vector<LevelUnit> units_of(const std::vector<Judged>& judged, const bath::BathType& type,
+                                const Units& units, const Medium& in) {
+  std::vector<LevelUnit> all;
+  for (const Judged& one : judged) all.push_back(unit_of(one, type, units, in));
+  return all;
+}
+
+std::string common_unit(const std::vector<LevelUnit>& all) {
+  std::string common = Units().any_level().symbol;
+  bool first = true;
+  for (const LevelUnit& unit : all) {
+    if (unit.symbol.empty()) continue;
+    if (!first && unit.symbol != common) return "";
+    common = unit.symbol, first = false;
+  }
+  return common;
+}
+
+std::string level_head(const std::string& common) { return common == "g/L" ? "g/L, or pH" : ""; }
+
+std::string levels_heading(const std::string& words, const std::string& common) {
+  return common.empty() || common == "g/L" ? words : words + ", " + common + " or pH";
+}
+
+std::string named(const std::string& name, const LevelUnit& unit, const std::string& common) {
+  return unit.symbol.empty() || unit.symbol == common ? name : name + " " + unit.symbol;
+}
+
+int decimals_of(const Judged& judged, const LevelUnit& unit) {
   if (judged.unit.empty()) return 2;
-  const double high = judged.aim->high;
-  return high > 0 ? std::clamp(2 - static_cast<int>(std::floor(std::log10(high))), 1, 5) : 1;
+  constexpr double many_figures = 10000;
+  const double high = unit.of(judged.aim->high);
+  return high > 0
+             ? std::clamp(2 - static_cast<int>(std::floor(std::log10(high))), high < many_figures ? 1 : 0, 5)
+             : 1;
 }
 
-Lines levels(const std::vector<Judged>& judged) {
-  Table table({{"g/L, or pH"},
+Lines levels(const std::vector<Judged>& judged, const std::vector<LevelUnit>& units) {
+  const std::string common = common_unit(units);
+  Table table({{level_head(common)},
                {"found", Align::number},
                {"low", Align::number},
                {"aim", Align::number},
                {"high", Align::number},
                {"state"}});
-  for (const Judged& j : judged) {
-    const int decimals = decimals_of(j);
-    table.add({j.label, fixed(j.found, decimals), fixed(j.aim->low, decimals), fixed(j.aim->aim, decimals),
-               fixed(j.aim->high, decimals), std::string(words(j.standing))});
+  for (std::size_t i = 0; i < judged.size(); ++i) {
+    const Judged& j = judged[i];
+    const auto shown = [&](double level) { return fixed(units[i].of(level), decimals_of(j, units[i])); };
+    table.add({named(j.label, units[i], common), shown(j.found), shown(j.aim->low), shown(j.aim->aim),
+               shown(j.aim->high), std::string(words(j.standing))});
   }
   return table.lines();
 }
 
-Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headroom) {
-  Table table({{"solid"},
-               {"at " + units::show(tank.temperature, "degC", 3)},
-               {"at " + units::show(tank.idle_temperature, "degC", 3)}});
+Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headroom, const Units& units) {
+  Table table(
+      {{"solid"}, {"at " + units.degrees(tank.temperature)}, {"at " + units.degrees(tank.idle_temperature)}});
+  const AmountUnit mass = units.amount_unit("kg");
   for (const bath::Headroom& h : headroom) {
     if (!std::isnan(h.forms_above_pH)) {
       table.add({pretty(h.solid),
@@ -66,8 +106,8 @@ Lines headroom(const bath::Tank& tank, const std::vector<bath::Headroom>& headro
       continue;
     }
     if (!h.covers_working && !h.covers_idle) continue;  // a hydrate that is stable at neither temperature
-    table.add({pretty(h.solid), room(h.covers_working, h.working_log10, h.working_kg, h.u_working_kg),
-               room(h.covers_idle, h.idle_log10, h.idle_kg, h.u_idle_kg)});
+    table.add({pretty(h.solid), room(h.covers_working, h.working_log10, h.working_kg, h.u_working_kg, mass),
+               room(h.covers_idle, h.idle_log10, h.idle_kg, h.u_idle_kg, mass)});
   }
   return table.lines();
 }
@@ -87,11 +127,12 @@ Lines free_ions(const bath::BathType& type, const std::vector<bath::SpeciesView>
   return table.lines();
 }
 
-std::vector<std::string> crystallising(const bath::Tank& tank, const std::vector<bath::Headroom>& headroom) {
+std::vector<std::string> crystallising(const bath::Tank& tank, const std::vector<bath::Headroom>& headroom,
+                                       const Units& units) {
   std::vector<std::string> out;
   for (const bath::Headroom& h : headroom) {
-    add_if_over(out, h, tank.temperature, h.covers_working, h.working_log10, h.working_kg);
-    add_if_over(out, h, tank.idle_temperature, h.covers_idle, h.idle_log10, h.idle_kg);
+    add_if_over(out, h, tank.temperature, h.covers_working, h.working_log10, h.working_kg, units);
+    add_if_over(out, h, tank.idle_temperature, h.covers_idle, h.idle_log10, h.idle_kg, units);
   }
   return out;
 }

@@ -4,7 +4,6 @@
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/sheets/table.hpp>
 #include <bathwright/sheets/tank_sheet.hpp>
-#include <bathwright/units/show.hpp>
 
 namespace bathwright::sheets {
 namespace {
@@ -41,26 +40,28 @@ Lines over_the_tank(const std::vector<bath::GasView>& gases) {
 }  // namespace
 
 Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath::TankView& view,
-                 const StateRead& read) {
+                 const StateRead& read, const Units& units) {
   Lines lines;
-  tank_title(lines, tank, view.volume_L, read.temperature);
+  tank_title(lines, tank, view.volume_L, read.temperature, units);
   say(lines, deferral);
   say(lines, "State: " + read.from + ".");
   stops(lines, read.changed_since);
-  say(lines, "At " + units::show(tank.temperature, "degC", 3) + ": pH " + fixed(view.pH, 2) + ", density " +
-                 fixed(view.density_kg_per_L, 4) + " kg/L, ionic strength " + fixed(view.ionic_strength, 2) +
-                 " mol/kg, water activity " + fixed(view.water_activity, 4) + ".");
+  say(lines, "At " + units.degrees(tank.temperature) + ": pH " + fixed(view.pH, 2) + ", density " +
+                 units.density(view.density_kg_per_L, 4) + ", ionic strength " +
+                 fixed(view.ionic_strength, 2) + " mol/kg, water activity " + fixed(view.water_activity, 4) +
+                 ".");
   const auto judged = judge(tank, type, view.quantity_g_per_L, read.pH);
   if (!view.valid)
     say(lines,
         "Indicative only: the solution lies outside what the model was tested for; see what is doubtful.");
-  heading(lines, "Levels");
-  append(lines, levels(judged));
+  const auto in_units = units_of(judged, type, units, units.medium_of(view));
+  heading(lines, levels_heading("Levels", common_unit(in_units)));
+  append(lines, levels(judged, in_units));
   heading(lines, "In solution");
   append(lines, free_ions(type, view.species));
   if (!view.headroom.empty()) {
     heading(lines, "Headroom");
-    append(lines, headroom(tank, view.headroom));
+    append(lines, headroom(tank, view.headroom, units));
   }
   const auto uncertain = [](const bath::SpeciesView& s) { return s.u_log10_activity.has_value(); };
   if (std::any_of(view.species.begin(), view.species.end(), uncertain))
@@ -85,7 +86,7 @@ Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath:
   append(lines, cautions(texts));
   append(lines, doubts(view.warnings));
   lines.emplace_back();
-  const auto over = crystallising(tank, view.headroom);
+  const auto over = crystallising(tank, view.headroom, units);
   for (const std::string& solid : over) say(lines, solid + ".", 2);
   const bool all_in = std::all_of(judged.begin(), judged.end(),
                                   [](const Judged& j) { return j.standing == Standing::in_window; });

@@ -156,6 +156,15 @@ Json analysis_document(const bath::Tank& tank, const bath::Chemistry& chemistry,
   return doc;
 }
 
+std::optional<double> density_in(const Json& analysis_document) {
+  const Json density = analysis_document.value("density", Json::object());
+  for (const char* from : {"measured", "predicted"})
+    if (density.is_object() && density.contains(from) && density[from].is_number() &&
+        density[from].get<double>() > 0)
+      return density[from].get<double>();
+  return std::nullopt;
+}
+
 bool all_in_window(const std::vector<sheets::Judged>& judged) {
   return std::all_of(judged.begin(), judged.end(),
                      [](const auto& j) { return j.standing == sheets::Standing::in_window; });

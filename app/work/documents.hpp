@@ -36,6 +36,10 @@ using Json = nlohmann::ordered_json;
 [[nodiscard]] Json analysis_document(const bath::Tank& tank, const bath::Chemistry& chemistry,
                                      const analysis::Analysis& analysis);
 
+/// The density of the solution, kg/L, in such a document: the hydrometer's, else that of the levels; nothing
+/// where it has neither.
+[[nodiscard]] std::optional<double> density_in(const Json& analysis_document);
+
 [[nodiscard]] bool all_in_window(const std::vector<sheets::Judged>& judged);
 
 }  // namespace bathwright::work

@@ -2,6 +2,8 @@
 
 #include <bathwright/sheets/log_sheet.hpp>
 
+#include "documents.hpp"
+
 namespace bathwright::work {
 namespace {
 
@@ -11,6 +13,7 @@ sheets::Before results_of(const logbook::Entry& entry, const Json& document,
   before.when = sheets::local_time(entry.happened.empty() ? entry.at : entry.happened, calendar);
   if (document.contains("pH") && document["pH"].is_number())
     before.level["pH"] = document["pH"].get<double>();
+  before.density_kg_per_L = density_in(document).value_or(0);
   if (!document.contains("results") || !document["results"].is_array()) return before;
   for (const Json& result : document["results"])
     if (result.is_object() && result.value("unit", "") == "g/L" && result.contains("quantity") &&

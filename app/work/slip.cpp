@@ -130,7 +130,7 @@ sheets::Page page_of(const Session& session, const Shop& shop, const DoseToPrint
   }
   return sheets::addition_page({shop.tank, shop.type(), dose.analysed.readings, dose.analysed.analysis,
                                 dose.sheet, dose.analysed.changed_since, dose.stops, dose.history.results,
-                                std::move(signature)});
+                                std::move(signature), dose.units});
 }
 
 }  // namespace bathwright::work

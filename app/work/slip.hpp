@@ -40,6 +40,7 @@ struct DoseToPrint {
   const std::vector<std::string>& stops;
   const History& history;
   const std::optional<LoggedDose>& logged;
+  sheets::Units units;
 };
 [[nodiscard]] sheets::Page page_of(const Session& session, const Shop& shop, const DoseToPrint& dose);
 

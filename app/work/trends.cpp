@@ -34,6 +34,7 @@ struct Analysed {
   std::int64_t entry;
   Levels found, predicted;
   std::string readings;  ///< the file's text
+  double density_kg_per_L = 0;
 };
 
 std::optional<Analysed> analysed_in(const logbook::Entry& entry,
@@ -47,7 +48,8 @@ std::optional<Analysed> analysed_in(const logbook::Entry& entry,
                entry.seq,
                levels_in(document, "results", true),
                levels_in(document, "book", false),
-               {}};
+               {},
+               density_in(document).value_or(0)};
   if (document.contains("pH") && document["pH"].is_number()) one.found["pH"] = document["pH"].get<double>();
   if (document.contains("inputs") && document["inputs"].is_object())
     one.readings = document["inputs"].value("readings_file", "");
@@ -75,7 +77,7 @@ Result<std::vector<Analysed>> analyses_of(const logbook::Logbook& log, const std
 
 Result<sheets::QuantityTrend> trend_of(const std::vector<Analysed>& all, const bath::Tank& tank,
                                        const std::string& quantity) {
-  sheets::QuantityTrend trend{quantity, quantity == "pH" ? "" : "g/L", {}, {}, {}, {}};
+  sheets::QuantityTrend trend{quantity, quantity == "pH" ? "" : "g/L", {}, {}, {}, {}, {}};
   trends::Window window;
   if (const bath::Aim* aim = tank.aim(quantity)) {
     trend.aim = *aim;
@@ -92,6 +94,7 @@ Result<sheets::QuantityTrend> trend_of(const std::vector<Analysed>& all, const b
       point.predicted = predicted->second;
     trend.points.push_back(point);
     trend.at.push_back(one.at);
+    trend.density_kg_per_L.push_back(one.density_kg_per_L);
   }
   auto judged = trends::trend_of(trend.points, window);
   if (!judged) return judged.problems();

@@ -33,7 +33,9 @@ constexpr double nickel_g_per_mol = 58.693;
 TEST_CASE("a level is told in every unit that may be chosen", "[unit][sheets]") {
   const bath::TankView view = solution();
   const double level = 70;
-  const auto told = [&](const char* unit) { return in(unit).level(nickel(), &view).of(level); };
+  const auto told = [&](const char* unit) {
+    return in(unit).level(nickel(), in(unit).medium_of(view)).of(level);
+  };
   CHECK(told("g/L") == level);
   CHECK(told("mg/L") == Approx(70000));
   CHECK(told("oz/US gal") == Approx(9.3475).epsilon(1e-4));    // 1 oz/US gal is 7.4892 g/L
@@ -46,21 +48,21 @@ TEST_CASE("a level is told in every unit that may be chosen", "[unit][sheets]") 
   const double water = 1.25 / (1 + 2 * (58.693 + 96.06) / 1000);
   CHECK(*water_kg_per_L(view) == Approx(water).epsilon(1e-4));
   CHECK(told("mol/kg water") == Approx(level / nickel_g_per_mol / water).epsilon(1e-4));
-  CHECK(in("N").level(nickel(), &view).symbol == "N (2 eq/mol)");
-  CHECK(in("ppm by mass").level(nickel(), &view).symbol == "ppm by mass");
+  CHECK(in("N").level(nickel()).symbol == "N (2 eq/mol)");
+  CHECK(in("ppm by mass").level(nickel(), in("ppm by mass").medium_of(view)).symbol == "ppm by mass");
 }
 
 TEST_CASE("what cannot be told in the chosen unit is told in g/L", "[unit][sheets]") {
   const bath::TankView view = solution();
   for (const char* unit : {"% w/w", "ppm by mass", "mol/kg water"}) {
-    CHECK(in(unit).level(nickel(), nullptr).symbol == "g/L");
-    CHECK(in(unit).level(nickel(), nullptr).of(70) == 70);
-    CHECK(in(unit).only_for_now());
+    CHECK(in(unit).level(nickel()).symbol == "g/L");
+    CHECK(in(unit).level(nickel()).of(70) == 70);
+    CHECK(in(unit).needs_medium());
     CHECK(in(unit).typed(nickel()) == "g/L");
   }
-  CHECK(in("N").level(quantity("H3BO3", {{"H3BO3", 1}}), &view).symbol == "g/L");
-  CHECK(in("N").level(quantity("H2SO4", {{"H^+", 0.5}}), &view).symbol == "N (2 eq/mol)");
-  CHECK(in("N").level(quantity("NaOH", {{"H^+", -1}, {"Zn^2+", -4}}), &view).symbol == "N (1 eq/mol)");
+  CHECK(in("N").level(quantity("H3BO3", {{"H3BO3", 1}})).symbol == "g/L");
+  CHECK(in("N").level(quantity("H2SO4", {{"H^+", 0.5}})).symbol == "N (2 eq/mol)");
+  CHECK(in("N").level(quantity("NaOH", {{"H^+", -1}, {"Zn^2+", -4}})).symbol == "N (1 eq/mol)");
 }
 
 TEST_CASE("what a bare number means can be read", "[unit][sheets]") {
@@ -78,7 +80,6 @@ TEST_CASE("amounts and densities in the chosen units", "[unit][sheets]") {
   CHECK(Units(chosen).amount(14, "kg") == "30.86 lb");
   CHECK(Units(chosen).amount(0.2, "kg") == "7.055 oz");
   CHECK(Units(chosen).amount(1, "L") == "33.81 fl oz");
-  CHECK_FALSE(Units(chosen).as_on_paper("kg"));
   chosen.mass = "g";
   CHECK(Units(chosen).mass(1.5) == "1500 g");
   const double kg_per_L = 1.183;  // over 0.99904 kg/L, water at 60 degF: SG 1.18414

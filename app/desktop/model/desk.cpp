@@ -413,7 +413,7 @@ void Desk::issue_slip(const Names& names) {
     return;
   }
   being_printed_ = std::make_shared<PrintedSheet>();
-  signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_,
+  signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_, units = units_,
                   printed = being_printed_, paper = paper_of(settings_),
                   folder = printing_.folder()]() -> Result<std::string> {
     // The log may have gone on since the readings were worked out.
@@ -435,7 +435,7 @@ void Desk::issue_slip(const Names& names) {
         work::log_dose(session, *worked.shop, worked.readings_file.string(), *fresh, doc, true);
     if (!logged) return logged.problems();
     const std::optional<work::LoggedDose> issued = *logged;
-    *printed = {work::page_of(session, *worked.shop, {*fresh, sheet, stops, *history, issued}), paper,
+    *printed = {work::page_of(session, *worked.shop, {*fresh, sheet, stops, *history, issued, units}), paper,
                 folder / ("slip-" + std::to_string(*logged->slip) + ".pdf")};
     return "Slip " + std::to_string(*logged->slip) + " is issued, in " + logged->path.string() + ". " +
            print(*printed);
@@ -528,9 +528,8 @@ void Desk::hand_over(const Names& names) {
 void Desk::save(const SaveCharts& asked) {
   fault_.clear();
   charts::Page page;
-  if (asked.charts == Charts::forecast && forecasted_) {
-    page = forecasted_->page;
-    page.charts = view_.forecast.charts;  // in the units that are seen
+  if (asked.charts == Charts::forecast && forecasted_ && forecasted_->run) {
+    page = sheets::forecast_charts(forecasted_->in(units_));
   }
   if (asked.charts == Charts::trends) page = {tank()->name, {"control charts"}, view_.trends.charts, ""};
   if (asked.charts == Charts::path)
@@ -546,10 +545,10 @@ void Desk::save(const SaveCharts& asked) {
 }
 
 void Desk::print_forecast() {
-  if (!forecasted_ || !forecasted_->sheet) return;
+  if (!forecasted_ || !forecasted_->complete) return;
   const std::string name = "forecast-" + forecasted_->tank_file.stem().string() + ".pdf";
-  const auto sheet = std::make_shared<const PrintedSheet>(
-      PrintedSheet{*forecasted_->sheet, paper_of(settings_), printing_.folder() / name});
+  const auto sheet = std::make_shared<const PrintedSheet>(PrintedSheet{
+      sheets::forecast_page(forecasted_->in(units_)), paper_of(settings_), printing_.folder() / name});
   fault_.clear();
   said_ = print(*sheet);
   printing_.add(sheet);

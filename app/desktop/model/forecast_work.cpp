@@ -60,46 +60,44 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
   const auto policy = moved(*read, told.levers);
   const auto forecast = forecast::Forecast::prepare(shop.tank, shop.chemistry, policy);
   if (!forecast) return fail(forecast.problems());
-  const auto run = forecast->run(start->state);
+  auto run = forecast->run(start->state);
   if (!run) return fail(run.problems());
   told.from = question.readings_file.empty() ? start->read.from : "the readings typed";
   told.currency = shop.tank.currency;
   told.notes = forecast->notes();
   for (const Problem& problem : run->ended) told.notes.push_back(problem.text());
-  std::optional<std::vector<double>> settled;
-  std::string why_unsettled;
-  const auto show = [&](const forecast::Bands* bands, bool complete) {
-    told.limits = bands ? bands->limits : forecast->limits(*run);
-    told.summary = forecast->summary(*run, forecast->limits(*run));
-    told.dates.clear();
-    for (const auto& limit : told.limits) told.dates.push_back(sheets::iso_date(policy, limit.day));
-    const sheets::ForecastPage page{
-        shop.tank,     *forecast,   *run,
-        bands,         told.limits, settled,
-        why_unsettled, told.bleeds, question.policy_file.filename().string() + changes(*read, told.levers),
-        told.from,     {},          {}};
-    told.page = sheets::forecast_charts(page);
-    if (complete) told.sheet = sheets::forecast_page(page);
-    told.sampled = bands != nullptr;
-    give(told);
-  };
-  show(nullptr, false);
+  told.policy = question.policy_file.filename().string() + changes(*read, told.levers);
+  told.forecast = *forecast;
+  told.run = std::make_shared<const forecast::Run>(*std::move(run));
+  told.limits = forecast->limits(*told.run);
+  told.summary = forecast->summary(*told.run, told.limits);
+  for (const auto& limit : told.limits) told.dates.push_back(sheets::iso_date(policy, limit.day));
+  give(told);
   told.bleeds =
       work::bleeds_to_hold(*forecast, start->state, told.limits, [&] { return stop.stop_requested(); });
   if (stop.stop_requested()) return;
   const auto steady = forecast->steady_state(start->state);
-  if (steady) settled = *steady;
-  why_unsettled = steady ? "nothing leaves the tank" : steady.problems().front().what;
-  show(nullptr, true);
+  if (steady) told.settled = *steady;
+  told.why_unsettled = steady ? "nothing leaves the tank" : steady.problems().front().what;
+  told.complete = true;
+  give(told);
   progress_ = 0;
   forecast::Forecast::Sampling sampling;
   sampling.samples = question.samples;
   sampling.threads = std::max(1u, std::thread::hardware_concurrency());
-  const auto bands = forecast->sample(start->state, sampling, [&](double share) {
+  auto bands = forecast->sample(start->state, sampling, [&](double share) {
     progress_ = share;
     return !stop.stop_requested();
   });
-  if (bands) show(&*bands, true);
+  if (!bands) return;
+  told.limits = bands->limits;
+  told.bands = std::make_shared<const forecast::Bands>(*std::move(bands));
+  give(told);
+}
+
+sheets::ForecastPage Forecasted::in(const sheets::Units& units) const {
+  return {shop->tank, *forecast, *run, bands.get(), limits, settled, why_unsettled,
+          bleeds,     policy,    from, {},          {},     units};
 }
 
 }  // namespace bathwright::desktop

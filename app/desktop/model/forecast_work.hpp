@@ -33,15 +33,20 @@ struct Forecasted {
   Problems problems;
   std::shared_ptr<const work::Shop> shop;  ///< where there are no problems
   Levers levers;                           ///< as computed with
-  charts::Page page;                       ///< to show and to save
   std::vector<forecast::LimitMet> limits;
   std::vector<std::string> dates;  ///< of the limits, where the policy has a calendar date
   std::vector<sheets::BleedToHold> bleeds;
   forecast::Summary summary;
   std::string currency, from;
   std::vector<std::string> notes;
-  bool sampled = false;
-  std::optional<sheets::Page> sheet;  ///< to print, once all but the samples is worked out
+  std::optional<forecast::Forecast> forecast;
+  std::shared_ptr<const forecast::Run> run;      ///< of the policy as it stands
+  std::shared_ptr<const forecast::Bands> bands;  ///< nullptr: not drawn yet
+  std::optional<std::vector<double>> settled;
+  std::string why_unsettled, policy;  ///< the second with what was moved of it
+  bool complete = false;              ///< all but the bands is worked out, so that it may be printed
+  /// To show, to save and to print; where there are no problems. It refers to this.
+  [[nodiscard]] sheets::ForecastPage in(const sheets::Units& units) const;
 };
 
 class ForecastWork {

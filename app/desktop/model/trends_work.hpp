@@ -2,7 +2,7 @@
 #pragma once
 
 #include <bathwright/bath/tank.hpp>
-#include <bathwright/charts/chart.hpp>
+#include <bathwright/sheets/trends_sheet.hpp>
 
 #include "work/session.hpp"
 
@@ -16,7 +16,7 @@ struct TrendsQuestion {
 struct TrendsAnswer {
   std::string tank;   ///< its name
   std::string empty;  ///< why there is nothing to show
-  std::vector<charts::Chart> charts;
+  std::optional<sheets::Trends> trends;
   std::vector<std::string> findings;
 };
 

@@ -19,13 +19,16 @@ std::string pretty_check(const std::string& name) {
 
 /// The single-addition rule of a chemical, by which it was portioned; "" where there is none.
 std::string largest_at_once(const AdditionSlip& slip, const std::string& chemical) {
+  const auto at_most = [&](double g_per_L) {
+    const LevelUnit unit = slip.units.any_level();
+    return "at most " + plain(g_per_L, unit.per_g_per_L) + " " + unit.symbol;
+  };
   const bath::ShelfItem* item = slip.tank.on_shelf(chemical);
   if (item && item->largest_rise_g_per_L)
-    return "at most " + plain(*item->largest_rise_g_per_L) + " g/L at once (tank file)";
+    return at_most(*item->largest_rise_g_per_L) + " at once (tank file)";
   const auto rule = std::ranges::find(slip.type.additions, chemical, &bath::AdditionRule::supply);
   if (rule == slip.type.additions.end()) return "";
-  if (rule->largest_rise_g_per_L > 0)
-    return "at most " + plain(rule->largest_rise_g_per_L) + " g/L at once (bath type)";
+  if (rule->largest_rise_g_per_L > 0) return at_most(rule->largest_rise_g_per_L) + " at once (bath type)";
   return rule->largest_pH_step > 0 ? "at most pH " + plain(rule->largest_pH_step) + " at once (bath type)"
                                    : "";
 }
@@ -77,7 +80,7 @@ std::string how(const AdditionSlip& slip, Together portions) {
     if (!words.empty()) text += (text.empty() ? "" : " ") + sentence(words);
   };
   if (step.dissolve_in_L)
-    say((portions.size() > 1 ? "each in " : "in ") + figure(*step.dissolve_in_L, 3) + " L of " +
+    say((portions.size() > 1 ? "each in " : "in ") + slip.units.liquid(*step.dissolve_in_L, 3) + " of " +
         step.dissolve_in + " first");
   say(step.how);
   std::string rules;
@@ -85,7 +88,7 @@ std::string how(const AdditionSlip& slip, Together portions) {
     if (!rule.empty()) rules += (rules.empty() ? "" : "; ") + rule;
   say(rules);
   constexpr double felt_C = 0.5;
-  if (step.warms_C > felt_C) say("warms the tank by " + figure(step.warms_C, 2) + " degC");
+  if (step.warms_C > felt_C) say("warms the tank by " + slip.units.warming(step.warms_C));
   // Where all of it goes in at one place, the order speaks for itself.
   if (!step.why_here.empty() && static_cast<std::size_t>(step.portions) > portions.size())
     say("here: " + step.why_here);
@@ -101,11 +104,11 @@ std::vector<std::string> taken(const AdditionSlip& slip, const dosing::Plan& pla
   const double all = addition == plan.additions.end() ? amount_of(portions) : addition->amount;
   std::string in_all;
   constexpr double rounding = 1e-6;
-  if (all > amount_of(portions) * (1 + rounding)) in_all = measured(all, first.unit) + " in all";
+  if (all > amount_of(portions) * (1 + rounding)) in_all = slip.units.amount(all, first.unit) + " in all";
   if (!item || item->stock.formula == "H2O")
     return in_all.empty() ? std::vector<std::string>{} : std::vector{in_all + ", with what others go in."};
   std::vector<std::string> lines{label_of(*item) + "; weighed ____ left ____"};
-  const std::string whole = containers(*item, all, first.unit);
+  const std::string whole = containers(*item, all, first.unit, slip.units);
   if (!in_all.empty()) in_all += whole.empty() ? "" : ": ";
   if (!in_all.empty() || !whole.empty()) lines.push_back(in_all + whole + ".");
   return lines;
@@ -118,11 +121,12 @@ std::string name_of(Together portions) {
 
 Task task_of(const AdditionSlip& slip, const dosing::Plan& plan, Together portions) {
   const dosing::Step& first = portions.front();
-  std::string title = numbers(portions) + measured(amount_of(portions), first.unit) + " " + name_of(portions);
+  std::string title =
+      numbers(portions) + slip.units.amount(amount_of(portions), first.unit) + " " + name_of(portions);
   std::string times;
   for (std::size_t i = 0; i < portions.size(); ++i) times += portions.size() > 2 ? " __" : " ____";
   if (portions.size() > 1)
-    title += ", " + std::to_string(portions.size()) + " x " + measured(first.amount, first.unit);
+    title += ", " + std::to_string(portions.size()) + " x " + slip.units.amount(first.amount, first.unit);
   Task task{title, "done" + times + (portions.size() > 2 ? " by __" : " by ____"), {}, {}};
   for (const dosing::Step& step : portions)
     for (const auto& check : step.checks)
@@ -145,10 +149,10 @@ Task task_of(const AdditionSlip& slip, const dosing::Plan& plan, Together portio
 }
 
 /// What is left for later shifts, told before the first of its steps.
-std::string for_the_next_shift(std::span<const Together> left) {
+std::string for_the_next_shift(std::span<const Together> left, const Units& units) {
   std::string what;
   for (const Together& portions : left)
-    what += (what.empty() ? "" : ", ") + measured(amount_of(portions), portions.front().unit) + " " +
+    what += (what.empty() ? "" : ", ") + units.amount(amount_of(portions), portions.front().unit) + " " +
             name_of(portions);
   return "The rest next shift, the waits fill this one: " + what + ".";
 }
@@ -169,7 +173,7 @@ Section order(const AdditionSlip& slip, const dosing::Plan& plan) {
   for (std::size_t g = 0; g < groups.size(); ++g) {
     if (groups[g].front().shift > shift) {
       shift = groups[g].front().shift;
-      section.blocks.emplace_back(Paragraph{for_the_next_shift(std::span(groups).subspan(g))});
+      section.blocks.emplace_back(Paragraph{for_the_next_shift(std::span(groups).subspan(g), slip.units)});
     }
     section.blocks.emplace_back(task_of(slip, plan, groups[g]));
   }
@@ -178,17 +182,28 @@ Section order(const AdditionSlip& slip, const dosing::Plan& plan) {
 }
 
 Section expected_after_each(const AdditionSlip& slip, const dosing::Plan& plan) {
+  const auto judged_after = [&](const dosing::Step& step) {
+    return judge(slip.tank, slip.type, step.predicted.quantity_g_per_L, step.predicted.pH);
+  };
+  const auto units_after = [&](const dosing::Step& step) {
+    return units_of(judged_after(step), slip.type, slip.units, slip.units.medium_of(step.predicted));
+  };
+  const auto units = units_after(plan.steps.front());
+  const std::string common = common_unit(units);
   std::vector<Column> heads{{"after", Align::number}};
-  for (const bath::Aim& aim : slip.tank.aims) heads.push_back({pretty(aim.quantity), Align::number});
-  heads.push_back({"L", Align::number});
+  for (std::size_t i = 0; i < units.size(); ++i)
+    heads.push_back({named(pretty(slip.tank.aims[i].quantity), units[i], common), Align::number});
+  heads.push_back({slip.units.volume_symbol(), Align::number});
   heads.push_back({"checks"});
   Table table(std::move(heads));
   for (const Together& portions : together(plan.steps)) {
     const dosing::Step& step = portions.back();
     std::vector<std::string> row{std::to_string(step.number)};
-    for (const Judged& one : judge(slip.tank, slip.type, step.predicted.quantity_g_per_L, step.predicted.pH))
-      row.push_back(fixed(one.found, decimals_of(one)));
-    row.push_back(fixed(step.predicted.volume_L, 0));
+    const auto judged = judged_after(step);
+    const auto then = units_after(step);
+    for (std::size_t i = 0; i < judged.size(); ++i)
+      row.push_back(fixed(then[i].of(judged[i].found), decimals_of(judged[i], then[i])));
+    row.push_back(slip.units.volume_figure(step.predicted.volume_L));
     const auto some = [&](bool stops) {
       return std::ranges::any_of(portions, [&](const dosing::Step& portion) {
         return std::ranges::any_of(portion.checks, [&](const auto& c) { return !c.ok && c.stops == stops; });
@@ -197,7 +212,7 @@ Section expected_after_each(const AdditionSlip& slip, const dosing::Plan& plan) 
     row.push_back(some(true) ? "STOP" : some(false) ? "watch" : "passed");
     table.add(std::move(row));
   }
-  Section section{"Expected after each step, g/L or pH", {}};
+  Section section{"Expected after each step" + (common.empty() ? "" : ", " + common + " or pH"), {}};
   section.blocks.emplace_back(std::move(table));
   return section;
 }

@@ -1,6 +1,5 @@
 #include <algorithm>
 #include <bathwright/sheets/names.hpp>
-#include <bathwright/units/show.hpp>
 
 #include "parts.hpp"
 
@@ -53,9 +52,9 @@ std::string sample(const AdditionSlip& slip) {
   const analysis::Readings& readings = slip.readings;
   std::string text = "no. " + or_by_hand(readings.sample_number) + " of " +
                      or_by_hand(sampled(readings.sampled)) + " by " + or_by_hand(readings.sampled_by) +
-                     "; tank at " + units::show(slip.analysis.temperature, "degC", 3);
+                     "; tank at " + slip.units.degrees(slip.analysis.temperature);
   if (readings.sample_temperature)
-    text += ", pipetted at " + units::show(*readings.sample_temperature, "degC", 3);
+    text += ", pipetted at " + slip.units.degrees(*readings.sample_temperature);
   return text;
 }
 
@@ -67,7 +66,7 @@ Section origin(const AdditionSlip& slip) {
   Fields fields;
   fields.push_back({"Limits", limits(tank.limits)});
   fields.push_back({"Sample", sample(slip)});
-  fields.push_back({"Volume", units::show(analysis.volume, "L") + ": " + analysis.volume_from});
+  fields.push_back({"Volume", slip.units.volume(analysis.volume.v) + ": " + analysis.volume_from});
   for (const auto& level : analysis.results)
     if (level.from == analysis::Origin::titration || level.from == analysis::Origin::found)
       if (!methods(slip.readings, level.quantity).empty())

@@ -18,9 +18,9 @@ namespace bathwright::sheets::slip {
 /// What the checks of the steps found that stops nothing.
 [[nodiscard]] Section watch(const dosing::Plan& plan);
 /// What the shelf can take out as a solid, of a level that ends too high.
-[[nodiscard]] Section bringing_down(const dosing::Plan& plan);
+[[nodiscard]] Section bringing_down(const AdditionSlip& slip, const dosing::Plan& plan);
 /// Aims that are not reached, what is left alone on purpose, and the limits in each other's way.
-[[nodiscard]] Section not_at_its_aim(const dosing::Plan& plan);
+[[nodiscard]] Section not_at_its_aim(const AdditionSlip& slip, const dosing::Plan& plan);
 [[nodiscard]] Section other_plans(const AdditionSlip& slip);
 [[nodiscard]] Section refused(const AdditionSlip& slip);
 /// What the bath type and the chemicals warn of, the codes of their labels once.
@@ -31,11 +31,14 @@ namespace bathwright::sheets::slip {
 [[nodiscard]] Section signing(const AdditionSlip& slip);
 
 /// "2 x 25 kg and 6.05 kg": whole containers and what is taken of one more; "" where none is whole.
-[[nodiscard]] std::string containers(const bath::ShelfItem& item, double amount, const std::string& unit);
+[[nodiscard]] std::string containers(const bath::ShelfItem& item, double amount, const std::string& unit,
+                                     const Units& units);
 /// "NiSO4.6H2O, 99 %, technical; lot 24-0815, to 2027-06-30".
 [[nodiscard]] std::string label_of(const bath::ShelfItem& item);
 /// A figure of a rule or label, as it was written: 25, 99.5.
 [[nodiscard]] std::string plain(double value);
+/// In a unit of which `per_one` make one of what it was written in: to four figures.
+[[nodiscard]] std::string plain(double value, double per_one);
 [[nodiscard]] std::string money(double cost, const bath::Tank& tank);
 
 }  // namespace bathwright::sheets::slip

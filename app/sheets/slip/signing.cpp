@@ -30,6 +30,13 @@ std::string re_analysis(const AdditionSlip& slip, const dosing::Plan& plan) {
   return text + ". Outside expected ± 2u: repeat, then look for what was not logged.";
 }
 
+std::string units_note(const AdditionSlip& slip) {
+  std::string note = slip.units.note();
+  if (slip.units.needs_medium())
+    note += " Limits and what was found are at the density found, what is expected at the density then.";
+  return note;
+}
+
 }  // namespace
 
 Section signing(const AdditionSlip& slip) {
@@ -51,6 +58,7 @@ Section signing(const AdditionSlip& slip) {
     lines.push_back({"nonconformance", ""});
   }
   section.blocks.push_back(std::move(lines));
+  if (const std::string note = units_note(slip); !note.empty()) section.blocks.emplace_back(Paragraph{note});
   section.blocks.emplace_back(Paragraph{std::string(deferral) + " Computed with " + by.program + "."});
   return section;
 }

@@ -7,7 +7,8 @@
 
 namespace bathwright::sheets::slip {
 
-std::string containers(const bath::ShelfItem& item, double amount, const std::string& unit) {
+std::string containers(const bath::ShelfItem& item, double amount, const std::string& unit,
+                       const Units& units) {
   if (!item.package) return "";
   const std::string priced_in = item.priced_per == bath::ShelfItem::Per::litre ? "L" : "kg";
   if (priced_in != unit) return "";
@@ -15,8 +16,9 @@ std::string containers(const bath::ShelfItem& item, double amount, const std::st
   const double whole = std::floor(amount / *item.package + hair);
   const double rest = amount - whole * *item.package;
   if (whole < 1) return "";
-  std::string text = fixed(whole, 0) + " x " + plain(*item.package) + " " + unit;
-  if (rest > hair * *item.package) text += " and " + measured(rest, unit);
+  const AmountUnit shown = units.amount_unit(unit);
+  std::string text = fixed(whole, 0) + " x " + plain(*item.package, shown.per_one) + " " + shown.symbol;
+  if (rest > hair * *item.package) text += " and " + units.amount(rest, unit);
   return text;
 }
 
@@ -33,6 +35,10 @@ std::string label_of(const bath::ShelfItem& item) {
 }
 
 std::string plain(double value) { return fmt::format("{:g}", value); }
+
+std::string plain(double value, double per_one) {
+  return per_one == 1 ? plain(value) : fmt::format("{:.4g}", value * per_one);
+}
 
 std::string money(double cost, const bath::Tank& tank) {
   return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);

@@ -211,7 +211,6 @@ TEST_CASE("figures are copied as rows for a spreadsheet", "[unit][desktop]") {
   DeskView view = a_view();
   view.chemistry.path = {{"pH",
                           "",
-                          "",
                           "kg added",
                           {},
                           {},

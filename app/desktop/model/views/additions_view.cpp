@@ -1,6 +1,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <bathwright/sheets/analysis_sheet.hpp>
 #include <bathwright/sheets/names.hpp>
 #include <cmath>
 #include <set>
@@ -36,19 +37,13 @@ int decimals_of(double value) {
   return value >= 1 || value == 0 ? 2 : std::min(6, 2 - static_cast<int>(std::floor(std::log10(value))));
 }
 
-/// A judged figure in the unit it is shown in: a level of a quantity, or a pH.
-LevelUnit unit_of(const sheets::Judged& judged, const bath::BathType& type, const bath::TankView* in,
-                  const Units& units) {
-  const bath::Quantity* quantity = judged.unit == "g/L" ? type.quantity(judged.aim->quantity) : nullptr;
-  return quantity ? units.level(*quantity, in) : LevelUnit{judged.unit, 1};
-}
-
 /// "nickel 70.2, boric acid 42.0 g/L, pH 4.20": a unit stands after the last level that has it.
 std::string levels_after(const dosing::Step& step, const bath::Tank& tank, const bath::BathType& type,
                          const Units& units) {
   std::string text, unit_before;
+  const sheets::Medium in = units.medium_of(step.predicted);
   for (const auto& judged : sheets::judge(tank, type, step.predicted.quantity_g_per_L, step.predicted.pH)) {
-    const LevelUnit unit = unit_of(judged, type, &step.predicted, units);
+    const LevelUnit unit = sheets::unit_of(judged, type, units, in);
     const double level = unit.of(judged.found);
     if (!unit_before.empty() && unit.symbol != unit_before) text += " " + unit_before;
     text += (text.empty() ? "" : ", ") + judged.label + " " +
@@ -70,6 +65,11 @@ const bath::TankView* end_of(const Worked& worked) {
   return worked.path.size() > 1 ? &worked.path.back().view : nullptr;
 }
 
+sheets::Medium medium_of(const Worked& worked, const Units& units) {
+  const sheets::Medium now = worked.now ? units.medium_of(*worked.now) : sheets::Medium{};
+  return worked.analysed ? sheets::medium_of(worked.analysed->analysis, now.water_kg_per_L) : now;
+}
+
 StateView state_view(const Worked& worked, const Units& units) {
   StateView view;
   if (!worked.shop || !worked.now) return view;
@@ -80,9 +80,10 @@ StateView state_view(const Worked& worked, const Units& units) {
   const auto now = sheets::judge(tank, type, worked.now->quantity_g_per_L, pH);
   const bath::TankView* end = end_of(worked);
   const auto then = end ? sheets::judge(tank, type, end->quantity_g_per_L, end->pH) : now;
+  const sheets::Medium in = medium_of(worked, units), in_then = end ? units.medium_of(*end) : in;
   for (std::size_t i = 0; i < now.size(); ++i) {
     const sheets::Judged& judged = now[i];
-    const LevelUnit unit = unit_of(judged, type, &*worked.now, units);
+    const LevelUnit unit = sheets::unit_of(judged, type, units, in);
     const int decimals =
         judged.unit.empty() ? 2 : decimals_of(unit.of(std::max(judged.found, judged.aim->aim)));
     ComponentRow row;
@@ -91,7 +92,7 @@ StateView state_view(const Worked& worked, const Units& units) {
     row.strip = {judged.aim->low, judged.aim->aim, judged.aim->high, judged.found, std::nullopt, 0};
     if (end) {
       row.strip.predicted = then[i].found;
-      row.predicted = fixed(unit_of(then[i], type, end, units).of(then[i].found), decimals);
+      row.predicted = fixed(sheets::unit_of(then[i], type, units, in_then).of(then[i].found), decimals);
     }
     if (worked.analysed)
       for (const auto& level : worked.analysed->analysis.reconciled)

@@ -111,8 +111,6 @@ SlipView slip_view(const std::optional<work::OpenSlip>& slip, const std::optiona
     SlipView::Row row;
     row.step = step.number;
     row.what = std::to_string(step.number) + "  " + units.amount(step.amount, step.unit) + " " + step.name;
-    if (!units.as_on_paper(step.unit))
-      row.what += " (" + sheets::measured(step.amount, step.unit) + " on paper)";
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
     if (step.wait_h > 0) row.wait = "then wait " + sheets::waiting(step.wait_h) + ", stirred";

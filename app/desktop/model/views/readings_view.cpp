@@ -66,18 +66,20 @@ ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_r
     view.rows.push_back(std::move(shown));
   }
   if (!worked) return view;
-  if (worked->analysed)
+  if (worked->analysed) {
+    const sheets::Medium in = medium_of(*worked, units);
     for (std::size_t i = 0; i < draft.rows.size(); ++i) {
       if (draft.rows[i].is_empty()) continue;
       for (const auto& level : worked->analysed->analysis.results)
         if (const bath::Quantity* quantity = worked->shop->type().quantity(level.quantity);
             quantity && level.quantity == draft.rows[i].quantity) {
-          const LevelUnit unit = units.level(*quantity, worked->now ? &*worked->now : nullptr);
+          const LevelUnit unit = units.level(*quantity, in);
           view.rows[i].result = figure(unit.of(level.value.v)) + " ± " +
                                 units::significant(unit.of(level.standard_uncertainty.v), 2) + " " +
                                 unit.symbol;
         }
     }
+  }
   for (const Problem& problem : worked->problems) {
     const int row = row_at(line_of(problem), line_of_row);
     if (row >= 0)

@@ -33,6 +33,9 @@ using sheets::Units;
 [[nodiscard]] TrendsView trends_view(const TrendsAnswer& answer, const bath::BathType* type,
                                      const Units& units);
 
+/// The solution whose levels are shown: as analysed, where readings were typed.
+[[nodiscard]] sheets::Medium medium_of(const Worked& worked, const Units& units);
+
 /// The tank at the end of what is planned, as the path has it; nullptr where nothing is to be added.
 [[nodiscard]] const bath::TankView* end_of(const Worked& worked);
 

@@ -14,7 +14,7 @@ std::string pretty_words(const std::string& sentence) {
       tail.insert(tail.begin(), word.back()), word.pop_back();
     const bool may_be_formula = !word.empty() && word.front() >= 'A' && word.front() <= 'Z' &&
                                 word.find_first_of("0123456789^") != std::string::npos;
-    out += (may_be_formula ? pretty(word) : word == "degC" ? "°C" : word) + tail;
+    out += (may_be_formula ? pretty(word) : word == "degC" ? "°C" : word == "degF" ? "°F" : word) + tail;
     word.clear();
   };
   for (const char c : sentence) {

@@ -29,8 +29,9 @@ struct Band {
 /// A level not to pass.
 struct Limit {
   double at = 0;
-  bool upper = true;  ///< above it is forbidden; else below
-  std::string name;   ///< "limit 120"
+  bool upper = true;                   ///< above it is forbidden; else below
+  std::string name;                    ///< "limit 120"
+  std::vector<double> x = {}, y = {};  ///< its border where that moves with x; empty: it is at `at`
 };
 
 /// What was measured, with one standard uncertainty; 0: not known.
@@ -49,9 +50,8 @@ struct Window {
 };
 
 struct Chart {
-  std::string title;     ///< "orthophosphite"
-  std::string unit;      ///< "g/L"
-  std::string level_of;  ///< id of the quantity whose level it shows, for whoever shows it in another unit
+  std::string title;  ///< "orthophosphite"
+  std::string unit;   ///< "g/L"
   std::string x_title;
   Scale x_scale = Scale::linear, y_scale = Scale::linear;
   std::vector<Band> bands;

@@ -6,6 +6,7 @@
 #include <bathwright/analysis/analysis.hpp>
 #include <bathwright/dosing/plan.hpp>
 #include <bathwright/sheets/page.hpp>
+#include <bathwright/sheets/shown_units.hpp>
 #include <map>
 #include <optional>
 
@@ -22,6 +23,7 @@ struct Signature {
 struct Before {
   std::string when;
   std::map<std::string, double, std::less<>> level;  ///< g/L by quantity id, and pH
+  double density_kg_per_L = 0;                       ///< as Medium; its water is not known
 };
 
 /// The best plan in full, the others in a line each.
@@ -35,6 +37,7 @@ struct AdditionSlip {
   std::vector<std::string> stops;          ///< what else keeps it from being carried out, a sentence each
   std::vector<Before> before;              ///< newest first
   Signature signature;
+  Units units;  ///< of amounts, levels, volumes and temperatures; sentences of checks keep theirs
 };
 
 [[nodiscard]] Page addition_page(const AdditionSlip& slip);

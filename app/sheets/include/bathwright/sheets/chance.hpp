@@ -2,6 +2,7 @@
 #pragma once
 
 #include <bathwright/dosing/plan.hpp>
+#include <bathwright/sheets/shown_units.hpp>
 #include <string>
 
 namespace bathwright::sheets {
@@ -12,6 +13,7 @@ namespace bathwright::sheets {
 [[nodiscard]] std::string chance_of_ending_inside(const bath::BathType& type, const dosing::Plan& plan);
 
 /// What might not stay dissolved at the working temperature; empty where everything surely does.
-[[nodiscard]] std::string chance_of_staying_dissolved(const bath::Tank& tank, const dosing::Plan& plan);
+[[nodiscard]] std::string chance_of_staying_dissolved(const bath::Tank& tank, const dosing::Plan& plan,
+                                                      const Units& units);
 
 }  // namespace bathwright::sheets

@@ -3,6 +3,7 @@
 
 #include <bathwright/forecast/forecast.hpp>
 #include <bathwright/sheets/page.hpp>
+#include <bathwright/sheets/shown_units.hpp>
 
 namespace bathwright::sheets {
 
@@ -40,7 +41,16 @@ struct ForecastPage {
   std::string policy_file, state_from;
   std::vector<forecast::Sensitivity> sensitivity;
   std::vector<PolicySummary> policies;  ///< this one and those it is set against; empty: none
+  Units units;
 };
+
+/// The solution on a day of the policy as it stands, which tells the bands of the samples, too; on its last
+/// day where it ended before.
+[[nodiscard]] Medium medium_on(const forecast::Run& run, double day);
+
+/// "aluminium above 1.27 % w/w", "Na2CO3.10H2O at 59.0 degF". A limit is kept in g/L: where a unit needs the
+/// density, it is told by that of the day it is met, else of the last day.
+[[nodiscard]] std::string limit_words(const ForecastPage& page, const forecast::LimitMet& limit);
 
 /// The cheapest of those that hold every limit; nullptr where none does.
 [[nodiscard]] const PolicySummary* cheapest_that_holds(const std::vector<PolicySummary>& policies);

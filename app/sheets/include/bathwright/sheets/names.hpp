@@ -17,9 +17,6 @@ namespace bathwright::sheets {
 /// To four significant digits; "" for NaN.
 [[nodiscard]] std::string figure(double value, int digits = 4);
 
-/// An amount as one would weigh or measure it: grams below a kilogram, millilitres below a litre.
-[[nodiscard]] std::string measured(double amount, const std::string& unit);
-
 /// "45 min", "2.0 h".
 [[nodiscard]] std::string waiting(double hours);
 

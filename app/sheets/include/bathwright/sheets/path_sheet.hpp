@@ -2,6 +2,7 @@
 #pragma once
 
 #include <bathwright/bath/chemistry.hpp>
+#include <bathwright/sheets/shown_units.hpp>
 #include <bathwright/sheets/text.hpp>
 
 namespace bathwright::sheets {
@@ -29,13 +30,14 @@ struct PathPoint {
 ///   points  the first before all additions
 [[nodiscard]] std::vector<std::string> path_findings(const bath::Tank& tank, const bath::BathType& type,
                                                      const std::vector<PathAddition>& additions,
-                                                     const std::vector<PathPoint>& points);
+                                                     const std::vector<PathPoint>& points,
+                                                     const Units& units = {});
 
 /// A table for each addition, then `findings`.
 ///   changed_since  what the log has of changes that are not in the first point, a sentence each
 [[nodiscard]] Lines path_sheet(const bath::Tank& tank, const std::vector<PathAddition>& additions,
                                const std::vector<PathPoint>& points,
                                const std::vector<std::string>& changed_since,
-                               const std::vector<std::string>& findings);
+                               const std::vector<std::string>& findings, const Units& units = {});
 
 }  // namespace bathwright::sheets

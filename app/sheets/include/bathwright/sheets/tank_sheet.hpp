@@ -14,6 +14,6 @@ struct StateRead {
 };
 
 [[nodiscard]] Lines tank_sheet(const bath::Tank& tank, const bath::BathType& type, const bath::TankView& view,
-                               const StateRead& read);
+                               const StateRead& read, const Units& units = {});
 
 }  // namespace bathwright::sheets
