@@ -91,3 +91,63 @@ TEST_CASE("amounts and densities in the chosen units", "[unit][sheets]") {
   chosen.density = "°Tw";  // 200 (SG - 1)
   CHECK(Units(chosen).density(kg_per_L) == "36.8 °Tw");
 }
+
+// Factors: NIST Special Publication 811 (2008), appendix B.8: 1 oz (avoirdupois) = 28.349523125 g, 1 lb =
+// 453.59237 g, 1 US gal = 3.785411784 L, 1 imp gal = 4.54609 L, 1 US fl oz = 29.5735295625 mL.
+TEST_CASE("factors are those of the published tables", "[reference][sheets]") {
+  const Units us(*unit_names("oz/US gal, lb, US gal, degF"));
+  CHECK(1 / us.level(nickel()).per_g_per_L ==
+        Approx(28.349523125 / 3.785411784).epsilon(1e-12));  // 7.489 g/L
+  CHECK(1 / Units(*unit_names("oz/imp gal")).any_level().per_g_per_L ==
+        Approx(28.349523125 / 4.54609).epsilon(1e-12));
+  CHECK(us.amount_unit("kg").per_one == Approx(1 / 0.45359237).epsilon(1e-12));
+  CHECK(us.amount_unit("L").per_one == Approx(1 / 3.785411784).epsilon(1e-12));
+  CHECK(us.small_mass().per_one == Approx(1000 / 28.349523125).epsilon(1e-12));
+  CHECK(us.volume(2400) == "634.0 US gal");
+  CHECK(us.liquid(0.31, 3) == "10.5 fl oz");
+  CHECK(Units().liquid(0.31, 3) == "0.310 L");
+  CHECK(us.degrees({55}) == "131 degF");
+  CHECK(us.warming(2) == "3.6 degF");  // a difference has no 32
+  CHECK(Units().degrees({55}) == "55.0 degC");
+  CHECK(Units().warming(2) == "2.0 degC");
+}
+
+TEST_CASE("a list of units says which kind each is of", "[unit][sheets]") {
+  const auto us = unit_names("degF, US gal,lb ,OZ/us gal");
+  REQUIRE(us);
+  CHECK(us->concentration == "oz/US gal");
+  CHECK(us->mass == "lb");
+  CHECK(us->volume == "US gal");
+  CHECK(us->liquid == "US gal");
+  CHECK(us->temperature == "°F");
+  CHECK(us->density == "kg/L");
+  CHECK(unit_names("fl oz, US gal")->volume == "US gal");
+  CHECK(unit_names("US gal, fl oz")->liquid == "fl oz");
+  CHECK(unit_names("L, m3")->volume == "m3");
+  CHECK(unit_names("L, m3")->liquid == "L");
+  CHECK(unit_names("%w/w, °Bé")->concentration == "% w/w");
+  CHECK(unit_names("degBe")->density == "°Bé");
+  for (const UnitChoice& choice : unit_choices())
+    for (const std::string& unit : choice.all) CHECK((*unit_names(unit)).*choice.kept == unit);
+}
+
+TEST_CASE("a list with a word nobody knows, or two of a kind, is refused", "[failure][sheets]") {
+  const auto unknown = unit_names("kg, oz/gall");
+  REQUIRE_FALSE(unknown);
+  CHECK(unknown.problems().size() == 1);
+  const std::string told = text(unknown.problems());
+  CHECK_THAT(told, Catch::Contains("\"oz/gall\"") && Catch::Contains("volumes in L, US gal, imp gal, m3") &&
+                       Catch::Contains("temperatures in °C, °F"));
+  CHECK_THAT(text(unit_names("lb, degC, kg").problems()),
+             Catch::Contains("\"lb\" and \"kg\" are both for masses"));
+  CHECK_FALSE(unit_names("US gal, imp gal"));
+  CHECK_FALSE(unit_names(""));
+  CHECK_FALSE(unit_names("lb,"));
+}
+
+TEST_CASE("a sheet says which units it has, where they are not the log's", "[unit][sheets]") {
+  CHECK(Units().note().empty());
+  CHECK(Units(*unit_names("SG")).note().empty());
+  CHECK_THAT(Units(*unit_names("lb, US gal, degF")).note(),
+             Catch::StartsWith("Units: lb, US gal, degF.") && Catch::Contains("g/L, kg, L, degC"));
+}

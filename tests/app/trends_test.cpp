@@ -12,13 +12,13 @@ namespace {
 const std::string log_option = " --log shift.sqlite";
 
 /// An analysis of day 1, 2, ... with boric acid as found and as predicted.
-void log_analysis(const Bench& bench, int day, double found, double predicted) {
-  const json body = {
-      {"pH", 4.1},
-      {"results",
-       {{{"quantity", "H3BO3"}, {"value", found}, {"unit", "g/L"}, {"from", "titration"}},
-        {{"quantity", "SO4^2-"}, {"value", 150.0}, {"unit", "g/L"}, {"from", "electroneutrality"}}}},
-      {"book", {{{"quantity", "H3BO3"}, {"value", predicted}, {"unit", "g/L"}, {"from", "book"}}}}};
+void log_analysis(const Bench& bench, int day, double found, double predicted, double kg_per_L = 0) {
+  json body = {{"pH", 4.1},
+               {"results",
+                {{{"quantity", "H3BO3"}, {"value", found}, {"unit", "g/L"}, {"from", "titration"}},
+                 {{"quantity", "SO4^2-"}, {"value", 150.0}, {"unit", "g/L"}, {"from", "electroneutrality"}}}},
+               {"book", {{{"quantity", "H3BO3"}, {"value", predicted}, {"unit", "g/L"}, {"from", "book"}}}}};
+  if (kg_per_L > 0) body["density"] = {{"predicted", kg_per_L}, {"measured", nullptr}};
   const std::string date = "2026-03-" + std::string(day < 10 ? "0" : "") + std::to_string(day) + " 05:40";
   const auto run = bench.run("log add analysis --tank 'N-07 Watts nickel' --happened '" + date +
                              "' --body '" + body.dump() + "'" + log_option);
@@ -60,6 +60,28 @@ TEST_CASE("trends tell a run of the tank's analyses, and none where there is non
   // Somebody says that entry is wrong: it no longer counts.
   REQUIRE(bench.run("log correct 13 --reason 'other tank'" + log_option).status == 0);
   CHECK(bench.run(trends).status == 0);
+}
+
+TEST_CASE("trends by mass stand by the density of each analysis", "[unit][command]") {
+  const Bench bench;
+  // The density differs from day to day, so that 41.5 and 42.5 g/L come to the same by mass.
+  for (int day = 1; day <= 12; ++day)
+    log_analysis(bench, day, day % 2 ? 41.5 : 42.5, 42, day % 2 ? 1.1787 : 1.2071);
+  const std::string trends = "trends " + app_test::tank + log_option;
+  const auto by_mass = bench.run(trends + " --units '% w/w' --quantity H3BO3");
+  INFO(by_mass.err);
+  CHECK_THAT(by_mass.out, Catch::Contains("H₃BO₃ % w/w"));
+  CHECK_THAT(by_mass.out, Catch::Contains("12  3.521"));  // 42 g/L in the mean of both
+  CHECK_THAT(by_mass.out, Catch::Contains("by the density logged with it"));
+  const auto us = bench.run(trends + " --units 'oz/US gal' --quantity H3BO3");
+  CHECK_THAT(us.out, Catch::Contains("H₃BO₃ oz/US gal") && Catch::Contains("12  5.608"));
+  // No water in the log: nobody is told mol/kg.
+  const auto molal = bench.run(trends + " --units 'mol/kg water' --quantity H3BO3");
+  CHECK_THAT(molal.out, Catch::Contains("H₃BO₃ g/L") && Catch::Contains("needs the water of each solution"));
+  // One analysis without a density, and all are in g/L.
+  log_analysis(bench, 13, 42, 42);
+  CHECK_THAT(bench.run(trends + " --units '% w/w' --quantity H3BO3").out,
+             Catch::Contains("H₃BO₃ g/L") && Catch::Contains("of analyses that have none"));
 }
 
 TEST_CASE("a quantity that was never found is told, with the nearest", "[failure][command]") {

@@ -94,6 +94,26 @@ TEST_CASE("a limit near the values is in the picture, one far off is told in wor
   CHECK(canvas.says("limit 5000 (above)"));
 }
 
+TEST_CASE("hatching ends at a border that moves", "[unit][charts]") {
+  for (const bool upper : {true, false}) {
+    Chart chart = rising();
+    chart.limits = {{100, upper, "limit", {0, 14, 28}, {100, 120, 110}}};
+    Recorder recorder;
+    const Frame frame = draw(chart, recorder, box);
+    std::size_t met = 0;
+    for (const Recorder::Line& line : recorder.lines) {
+      if (line.pen.colour.alpha != 70 || line.points.size() != 2) continue;
+      const Point end = upper ? line.points.front() : line.points.back();
+      if (end.x <= frame.plot.left || end.x >= frame.plot.right()) continue;
+      ++met;
+      const double share = (end.x - frame.at(0, 0).x) / (frame.at(28, 0).x - frame.at(0, 0).x);
+      const double y = share < 0.5 ? 100 + 40 * share : 120 - 20 * (share - 0.5);
+      CHECK(end.y == Approx(frame.at(0, y).y).margin(0.5));
+    }
+    CHECK(met > 20);
+  }
+}
+
 TEST_CASE("a line is broken where there is no value", "[unit][charts]") {
   Chart chart = rising();
   chart.lines[0].y[10] = std::numeric_limits<double>::quiet_NaN();

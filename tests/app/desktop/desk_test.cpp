@@ -198,6 +198,35 @@ TEST_CASE("what is printed is shown and sent to the print command", "[desktop]")
   CHECK(fs::file_size(charts) > 1000);
 }
 
+TEST_CASE("other days are in the chosen unit, and printed in it", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  open(desk, "AL-1");
+  ask(desk, GoTo{PageName::forecast});
+  const auto aluminium = [&] {
+    const auto& all = desk.view().forecast.charts;
+    const auto chart =
+        std::ranges::find_if(all, [](const auto& c) { return c.title.starts_with("aluminium"); });
+    REQUIRE(chart != all.end());
+    return *chart;
+  };
+  const charts::Chart in_g_per_L = aluminium();
+  CHECK(in_g_per_L.unit == "g/L");
+  ask(desk, choice("concentrations", "% w/w"));
+  const charts::Chart by_mass = aluminium();
+  CHECK(by_mass.unit == "% w/w");
+  const auto kg_per_L = [&](std::size_t day) {
+    return in_g_per_L.lines[0].y[day] / by_mass.lines[0].y[day] / 10;
+  };
+  CHECK(kg_per_L(0) > 1.1);
+  CHECK(kg_per_L(by_mass.lines[0].y.size() - 1) > kg_per_L(0) + 0.05);  // aluminium builds up
+  REQUIRE_FALSE(by_mass.limits.empty());
+  CHECK(by_mass.limits[0].y.front() > by_mass.limits[0].y.back());  // 15 g/L all the time
+  for (const std::string& note : desk.view().forecast.notes) CHECK(note.find("density") == std::string::npos);
+  ask(desk, choice("concentrations", "mol/kg water"));
+  CHECK(aluminium().unit == "mol/kg water");
+}
+
 TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
   const Home home;
   Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
