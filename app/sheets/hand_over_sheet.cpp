@@ -33,10 +33,16 @@ std::string in_words(const std::string& what) {
   return what.substr(0, last) + pretty(what.substr(last));
 }
 
+LevelUnit unit_of(const std::string& quantity, const Units& units) {
+  if (quantity == "pH") return {"", 1};
+  const auto formula = matter::Formula::parse(quantity);
+  return formula ? units.level({quantity, quantity, *formula, {}}) : units.any_level();
+}
+
 }  // namespace
 
-Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& calendar,
-                    const std::string& by) {
+Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& calendar, const std::string& by,
+                    const Units& units) {
   const auto local = [&](shifts::UtcTime time) { return calendar.zone().local_text(time); };
   Page page{
       "Hand-over of shift " + told.shift.label, local(told.shift.from) + " to " + local(told.shift.to), {}};
@@ -54,15 +60,19 @@ Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& cal
   page.add(std::move(slips));
 
   Section outside{"Out of window", {}};
-  Table out({{"tank"},
-             {"of"},
-             {"found", Align::number},
-             {"low", Align::number},
-             {"high", Align::number},
-             {"entry", Align::number}});
-  for (const auto& one : told.out_of_window)
-    out.add({one.tank, pretty(one.quantity), figure(one.found), figure(one.low), figure(one.high),
-             std::to_string(one.seq)});
+  const std::string note = units.note();  // "": the unit that goes without saying
+  std::vector<Column> heads = {{"tank"}, {"of"}};
+  if (!note.empty()) heads.push_back({"in"});
+  for (const char* head : {"found", "low", "high", "entry"}) heads.push_back({head, Align::number});
+  Table out(std::move(heads));
+  for (const auto& one : told.out_of_window) {
+    const LevelUnit unit = unit_of(one.quantity, units);
+    std::vector<std::string> row = {one.tank, pretty(one.quantity)};
+    if (!note.empty()) row.push_back(unit.symbol);
+    for (const double level : {one.found, one.low, one.high}) row.push_back(figure(unit.of(level)));
+    row.push_back(std::to_string(one.seq));
+    out.add(std::move(row));
+  }
   if (out.empty())
     outside.blocks.emplace_back(Paragraph{"Nothing that was analysed in this shift."});
   else
@@ -86,6 +96,7 @@ Page hand_over_page(const hand_over::HandOver& told, const shifts::Calendar& cal
   page.add(std::move(logged));
 
   Section end;
+  if (!note.empty()) end.blocks.emplace_back(Paragraph{note});
   if (told.head) {
     end.blocks.emplace_back(Paragraph{"Entry " + std::to_string(told.head->seq) +
                                       " is the last. Its hash, to compare the log with later:"});

@@ -8,7 +8,7 @@ using app_test::Bench;
 
 namespace {
 
-const std::string us = " --units 'oz/US gal, lb, US gal, degF'";
+const std::string us_units = " --units 'oz/US gal, lb, US gal, degF'";
 const std::string dose = "dose " + app_test::tank + " " + app_test::readings;
 const std::string forecast =
     "forecast " PROJECT_DIR "/baths/al-1.toml " PROJECT_DIR "/baths/policies/al-1.toml --samples 8";
@@ -17,7 +17,7 @@ const std::string forecast =
 
 TEST_CASE("a slip in US units", "[unit][command]") {
   const Bench bench;
-  const auto run = bench.run(dose + us);
+  const auto run = bench.run(dose + us_units);
   INFO(run.err);
   // 1 lb is 0.45359237 kg, 1 US gal 3.785411784 L, 1 oz/US gal 7.48915 g/L (NIST Special Publication 811,
   // 2008).
@@ -39,7 +39,7 @@ TEST_CASE("documents know nothing of the units that are shown", "[property][comm
   for (const std::string& verb :
        {dose, "tank " + app_test::tank, "analyse " + app_test::tank + " " + app_test::readings, forecast,
         "path " + app_test::tank + " --add '400 kg nickel-sulfate'"})
-    CHECK(bench.run(verb + " --json" + us).out == bench.run(verb + " --json").out);
+    CHECK(bench.run(verb + " --json" + us_units).out == bench.run(verb + " --json").out);
 }
 
 TEST_CASE("a forecast by mass has the density of each day", "[unit][command]") {
@@ -69,7 +69,7 @@ TEST_CASE("a forecast by mass has the density of each day", "[unit][command]") {
 
 TEST_CASE("tank, analysis and path in other units", "[unit][command]") {
   const Bench bench;
-  const auto tank = bench.run("tank " + app_test::tank + us);
+  const auto tank = bench.run("tank " + app_test::tank + us_units);
   CHECK_THAT(tank.out, Catch::Contains("634.0 US gal, 131 degF"));                  // 2400 L, 55 degC
   CHECK_THAT(tank.out, Catch::Contains("boric acid                        5.61"));  // 42 g/L
   CHECK_THAT(tank.out, Catch::Contains("room for 212 ± 80 lb"));                    // 96 kg
@@ -79,7 +79,7 @@ TEST_CASE("tank, analysis and path in other units", "[unit][command]") {
   const auto molal =
       bench.run("analyse " + app_test::tank + " " + app_test::readings + " --units 'mol/kg water'");
   CHECK_THAT(molal.out, Catch::Contains("quantity    mol/kg water"));
-  const auto path = bench.run("path " + app_test::tank + us + " --add '400 kg nickel-sulfate'");
+  const auto path = bench.run("path " + app_test::tank + us_units + " --add '400 kg nickel-sulfate'");
   CHECK_THAT(path.out, Catch::Contains("added lb") && Catch::Contains("volume US gal"));
   CHECK_THAT(path.out, Catch::Contains(" 882 "));  // 400 kg
   CHECK_THAT(path.out, Catch::Contains("leaves its window of 30.04 to 40.06 oz/US"));
@@ -92,4 +92,19 @@ TEST_CASE("a unit nobody knows is told with those to choose from", "[failure][co
   CHECK(run.status == 2);
   CHECK_THAT(run.err, Catch::Contains("\"stone\"") && Catch::Contains("masses in kg, g, lb, oz"));
   CHECK(bench.run("tank " + app_test::tank + " --units 'lb, kg'").status == 2);
+}
+
+TEST_CASE("a hand-over in other units says which", "[unit][command]") {
+  const Bench bench;
+  const std::string log = " --log shift.sqlite";
+  REQUIRE(bench.run("log shifts 3x8 --zone UTC" + log).status == 0);
+  REQUIRE(bench.run("analyse " + app_test::tank + " " + app_test::readings + log).status == 1);
+  const std::string hand_over = "log hand-over " + app_test::tank + log;
+  const auto us = bench.run(hand_over + us_units);
+  INFO(us.err);
+  CHECK_THAT(us.out, Catch::Contains("H₃BO₃  oz/US gal  4.937"));  // 36.97 g/L
+  CHECK_THAT(us.out, Catch::Contains("Units: oz/US gal, lb, US gal, degF."));
+  const auto by_mass = bench.run(hand_over + " --units '% w/w'");
+  CHECK_THAT(by_mass.out, Catch::Contains("H₃BO₃  g/L"));
+  CHECK(bench.run(hand_over).out.find("g/L") == std::string::npos);
 }

@@ -133,7 +133,8 @@ int hand_over_verb(const Context& context, const HandOverOptions& options) {
   const auto told = hand_over::hand_over(*log, **calendar, *shift, tanks, now);
   if (!told) return fail(context, told.problems());
   Json doc = hand_over_document(*told);
-  const sheets::Page page = sheets::hand_over_page(*told, **calendar, signer(context));
+  const sheets::Page page =
+      sheets::hand_over_page(*told, **calendar, signer(context), sheets::Units(context.units));
   sheets::Lines lines = sheets::text_of(page);
   if (options.log_it) {
     logbook::NewEntry entry;
@@ -180,6 +181,7 @@ void add_shifts(CLI::App& log, Context& context, Action& action) {
   hand_over->add_option("--of", to_hand_over->label, "the shift, as \"2026-03-02 night\"; else the latest");
   hand_over->add_flag("--sign", to_hand_over->log_it, "logs that it was handed over");
   add_printed_files(*hand_over, to_hand_over->printed);
+  add_units(*hand_over, context);
   add_signature(*hand_over, context);
   hand_over->callback([&context, &action, to_hand_over] {
     action = [&context, to_hand_over] { return hand_over_verb(context, *to_hand_over); };

@@ -512,14 +512,14 @@ void Desk::hand_over(const Names& names) {
   if (signing_.busy()) return;
   being_printed_ = std::make_shared<PrintedSheet>();
   signing_.start([session = signed_by(session_, names), told = *log_.told, calendar = *log_.calendar,
-                  printed = being_printed_, paper = paper_of(settings_),
+                  units = units_, printed = being_printed_, paper = paper_of(settings_),
                   folder = printing_.folder()]() -> Result<std::string> {
     logbook::NewEntry entry;
     entry.kind = logbook::EntryKind::hand_over;
     entry.body = work::text_of(work::hand_over_document(told));
     const auto logged = work::append_to_log(session, std::move(entry));
     if (!logged) return logged.problems();
-    *printed = {sheets::hand_over_page(told, calendar, work::signer(session)), paper,
+    *printed = {sheets::hand_over_page(told, calendar, work::signer(session), units), paper,
                 folder / ("hand-over-" + std::to_string(logged->entry.seq) + ".pdf")};
     return work::words(*logged) + " " + print(*printed);
   });
@@ -675,6 +675,9 @@ void Desk::show() {
   view_.log.file = session_.log_file;
   view_.log.shown = shown_entry_;
   view_.hand_over = {log_.hand_over_text, log_.calendar.has_value()};
+  if (view_.page == PageName::hand_over && log_.told && log_.calendar)
+    view_.hand_over.text =
+        sheets::text_of(sheets::hand_over_page(*log_.told, *log_.calendar, work::signer(session_), units_));
   view_.printed = printing_.view(settings_.print_command);
   view_.bath_types.working = bath_types_job_.working();
   view_.bath_types.examined.reset();

@@ -29,7 +29,8 @@ using sheets::Units;
 [[nodiscard]] ShiftView shift_view(const LogNow& log, shifts::UtcTime now);
 [[nodiscard]] LogView log_view(const LogNow& log);
 [[nodiscard]] ForecastView forecast_view(const Forecasted& told, const Units& units);
-/// `type`: of the tank, where it is known already; else levels are in g/L.
+/// `type`: of the tank, where it is known already; else only a mass in a volume is told in other units than
+/// g/L.
 [[nodiscard]] TrendsView trends_view(const TrendsAnswer& answer, const bath::BathType* type,
                                      const Units& units);
 
