@@ -24,6 +24,7 @@ struct LastSeen {
   std::vector<std::string> low, high, stop;  ///< quantities outside their window
   std::string at;
   bool slip_open = false;
+  bool added_since = false;  ///< or dumped: what was out of its window may be inside now
 };
 
 struct LogNow {

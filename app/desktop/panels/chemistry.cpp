@@ -17,7 +17,7 @@ void then(const std::string& figure, const Look& look) {
 
 void draw_figures(const ChemistryView& view, const Look& look) {
   if (view.figures.empty() || !ImGui::BeginTable("figures", 3, ImGuiTableFlags_SizingStretchProp)) return;
-  for (const auto& [name, weight] : {std::pair{"", 1.6F}, {"now", 1.0F}, {"then", 1.0F}})
+  for (const auto& [name, weight] : {std::pair{"", 1.2F}, {"now", 1.1F}, {"then", 0.6F}})
     ImGui::TableSetupColumn(name, 0, weight);
   for (const FigureRow& row : view.figures) {
     ImGui::TableNextRow();
@@ -34,7 +34,7 @@ void draw_figures(const ChemistryView& view, const Look& look) {
 void draw_ions(const ChemistryView& view, const Look& look, Intents& out) {
   if (!ImGui::BeginTable("ions", 4, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] :
-       {std::pair{"ion", 1.25F}, {"mol/kg", 1.3F}, {"activity", 1.0F}, {"then", 1.0F}})
+       {std::pair{"ion", 1.2F}, {"mol/kg", 1.15F}, {"activity", 1.05F}, {"then", 1.05F}})
     ImGui::TableSetupColumn(name, 0, weight);
   ImGui::PushFont(look.fonts.caption);
   ImGui::TableHeadersRow();

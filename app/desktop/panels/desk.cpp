@@ -5,10 +5,21 @@
 namespace bathwright::desktop {
 namespace {
 
-constexpr float pages_high = 40, rail = 190, strip = 70, status = 24, chemistry = 330;
+constexpr float pages_high = 40, strip = 70, status = 24;
 /// Large letters in a small window: a narrow line, no time line, the chemistry below the page.
-constexpr float cramped = 900, cramped_rail = 130, cramped_strip = 36;
+constexpr float cramped = 1000, cramped_strip = 36;
 bool is_cramped(const Look& look) { return ImGui::GetIO().DisplaySize.x < look.px(cramped); }
+
+/// Beside the page; in a small window they leave it room for a row of burettes.
+struct Sides {
+  float line, chemistry;
+};
+Sides sides(const Look& look) {
+  constexpr float very_small = 800, small = 1200;
+  const float width = ImGui::GetIO().DisplaySize.x / look.scale;
+  if (is_cramped(look)) return {width < very_small ? 130.F : 174.F, 0};
+  return width < small ? Sides{174, 300} : Sides{190, 330};
+}
 
 /// One line that ends at the window's edge; the whole of it under the pointer.
 void status_line(const std::string& words, charts::Colour c) {
@@ -27,7 +38,7 @@ constexpr ImGuiWindowFlags fixed = ImGuiWindowFlags_NoBackground | ImGuiWindowFl
 
 /// The pages as words; the one that is open is underlined.
 void draw_pages(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
-  ImGui::SetCursorPos({look.px(is_cramped(look) ? 4 : rail), look.px(6)});
+  ImGui::SetCursorPos({look.px(is_cramped(look) ? 4 : sides(look).line), look.px(6)});
   if (state.go_to_part && state.part == Part::pages) ImGui::SetKeyboardFocusHere();
   for (const auto& [page, words] : pages) {
     const bool open = page == view.page;
@@ -119,8 +130,8 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     draw_pages(view, state, look, out);
     const bool narrow = is_cramped(look), with_chemistry = view.page == PageName::shift;
     const float foot = narrow ? cramped_strip : strip, top = look.px(pages_high),
-                body = all.y - top - look.px(foot + status), left = look.px(narrow ? cramped_rail : rail),
-                right = with_chemistry && !narrow ? look.px(chemistry) : 0;
+                body = all.y - top - look.px(foot + status), left = look.px(sides(look).line),
+                right = with_chemistry ? look.px(sides(look).chemistry) : 0;
     ImGui::SetCursorPos({0, top});
     panel("line", {left, body}, Part::line, [&] { draw_line(view.line, look, out); });
     ImGui::SameLine(0, 0);

@@ -12,7 +12,7 @@ void draw_tank(const TankOnLine& tank, int index, bool selected, const Look& loo
   if (ImGui::Selectable("##open", selected, 0, {0, row})) out.emplace_back(OpenTank{index});
   note_place(look, "tank " + tank.name);
   ImGui::SetCursorPos({corner.x + look.px(8), corner.y + look.px(8)});
-  constexpr float words_need = 90;  // in a narrow line the words come before the vessel
+  constexpr float words_need = 70;  // in a narrow line the words come before the vessel
   if (ImGui::GetContentRegionAvail().x > look.px(width + 10 + words_need)) {
     DrawListCanvas canvas = drawing_room(look, width, height);
     draw_vessel(canvas, {2, 2, width - 4, height - 4}, tank.vessel, look.palette);

@@ -117,6 +117,8 @@ TEST_CASE("a shift's work at the window", "[desktop][window]") {
   CHECK(driver.view().slip.all_done);
   driver.click("Close the slip: carried out");
   REQUIRE(driver.until([&] { return driver.view().slip.number == 0 && !driver.desk().working(); }));
+  const LineView& line = driver.view().line;
+  CHECK(line.tanks[static_cast<std::size_t>(line.selected)].word == "added: analyse again");
 
   driver.click("Log");
   driver.pictures(3);

@@ -55,11 +55,12 @@ double share(double log10_room, bool covered) { return covered ? std::pow(10, -l
 std::vector<FigureRow> figures_of(const bath::TankView& now, const bath::TankView* end, const Units& units) {
   std::vector<FigureRow> rows;
   const auto add = [&](const std::string& name, const auto& words) {
-    rows.push_back({name, words(now), end ? words(*end) : std::string()});
+    std::string then = end ? words(*end) : std::string();
+    rows.push_back({name, words(now), then.substr(0, then.find(' '))});  // the unit stands beside the first
   };
   using View = bath::TankView;
   add("pH", [](const View& v) { return fixed(v.pH, 2); });
-  add("ionic strength, mol/kg", [](const View& v) { return figure(v.ionic_strength, 3); });
+  add("ionic strength", [](const View& v) { return figure(v.ionic_strength, 3) + " mol/kg"; });
   add("water activity", [](const View& v) { return fixed(v.water_activity, 3); });
   add("density", [&](const View& v) { return units.density(v.density_kg_per_L); });
   return rows;

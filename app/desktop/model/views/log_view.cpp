@@ -86,6 +86,7 @@ LineView line_view(const ShopFolder& shop, const LogNow& log, int selected) {
       if (!last.high.empty())
         shown.state = charts::State::act, shown.word = pretty(last.high.front()) + " high";
       if (!last.low.empty()) shown.state = charts::State::act, shown.word = "add " + pretty(last.low.front());
+      if (shown.state == charts::State::act && last.added_since) shown.word = "added: analyse again";
       if (!last.stop.empty())
         shown.state = charts::State::stop, shown.word = "stop: " + pretty(last.stop.front());
       if (last.slip_open && shown.state != charts::State::stop)
