@@ -105,7 +105,7 @@ void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
     return;
   }
   shop_ = *std::move(shop);
-  fault_ = text(shop_.problems);
+  fault_.clear();
   // The demonstration has a log of its own: what is tried on it never stands between a real shop's entries.
   session_.log_file = given_log_;
   if (given_log_.empty())

@@ -36,13 +36,16 @@ Result<ShopFolder> read_shop(const fs::path& folder) {
     if (tank)
       tanks.emplace_back(*std::move(tank), file);
     else
-      shop.problems.insert(shop.problems.end(), tank.problems().begin(), tank.problems().end());
+      shop.unread.push_back({file, tank.problems()});
   }
   if (tanks.empty()) {
-    if (!shop.problems.empty()) return shop.problems;
+    Problems all;
+    for (const UnreadFile& one : shop.unread) all.insert(all.end(), one.problems.begin(), one.problems.end());
+    if (!all.empty()) return all;
     return Problem{Fault::bad_input, folder.string(), "has no tank file", "files such as n-07.toml",
                    "Copy one from the demonstration shop and enter your tank."};
   }
+  std::ranges::sort(shop.unread, {}, &UnreadFile::file);
   std::ranges::sort(tanks, [](const auto& a, const auto& b) {
     return std::pair(a.first.line, a.first.name) < std::pair(b.first.line, b.first.name);
   });

@@ -7,11 +7,17 @@
 
 namespace bathwright::desktop {
 
+/// A file that is no tank file as it stands.
+struct UnreadFile {
+  std::filesystem::path file;
+  Problems problems;
+};
+
 struct ShopFolder {
   std::filesystem::path folder;
   std::vector<std::filesystem::path> files;              ///< of the tanks
   std::shared_ptr<const std::vector<bath::Tank>> tanks;  ///< as many
-  Problems problems;                                     ///< of files that are no tank files as they stand
+  std::vector<UnreadFile> unread;
 
   /// Files of policies/ whose name begins with that of the tank's file.
   [[nodiscard]] std::vector<std::filesystem::path> policies(std::size_t tank) const;

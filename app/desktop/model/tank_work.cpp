@@ -24,10 +24,12 @@ struct Move {
   double kg = 0;
 };
 
+/// By its additions: its steps carry some of the water with what is dissolved in it.
 std::vector<Move> moves_of(const dosing::Plan& plan) {
   std::vector<Move> moves;
-  for (const dosing::Step& step : plan.steps)
-    moves.push_back(step.takes_out ? Move{step.amount, {}, 0} : Move{0, step.chemical, step.kg});
+  if (plan.decant_L > 0) moves.push_back({plan.decant_L, {}, 0});
+  for (const dosing::Addition& addition : plan.additions)
+    moves.push_back({0, addition.chemical, addition.kg});
   return moves;
 }
 
@@ -52,8 +54,8 @@ std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& fr
   add();
   for (const Move& move : moves) {
     if (move.take_out_L > 0) {
-      state =
-          bath::without(std::move(state), std::min(1.0, move.take_out_L / shop.chemistry.volume_L(state)));
+      const double share = std::min(1.0, move.take_out_L / shop.chemistry.volume_L(state));
+      state = bath::without(std::move(state), share);
       add();
     }
     const matter::StockChemical* stock = move.kg > 0 ? stock_of(shop.tank, move.chemical) : nullptr;
@@ -167,11 +169,12 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
   }
   worked.own_of = planned_->own_of = std::nullopt;
   worked.own = planned_->own = std::nullopt;
-  if (!worked.sheet->plans.empty()) {
-    const auto plan =
-        std::min<std::size_t>(static_cast<std::size_t>(question.plan), worked.sheet->plans.size() - 1);
+  const auto along_the_plan = [&] {
+    if (worked.sheet->plans.empty()) return;
+    const auto plan = std::min(static_cast<std::size_t>(question.plan), worked.sheet->plans.size() - 1);
     worked.path = path_of(**shop, from, moves_of(worked.sheet->plans[plan]), stop);
-  }
+  };
+  along_the_plan();
   give(worked);
   if (sampled_ || stop.stop_requested()) return;
   auto sampled =
@@ -180,6 +183,7 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
   if (!sampled) return;
   sampled_ = true;
   planned_->sheet = worked.sheet = *std::move(sampled);
+  along_the_plan();  // which may be another: a more certain one can stand before it now
   give(std::move(worked));
 }
 

@@ -32,10 +32,11 @@ void draw_figures(const ChemistryView& view, const Look& look) {
 }
 
 void draw_ions(const ChemistryView& view, const Look& look, Intents& out) {
-  if (!ImGui::BeginTable("ions", 4, ImGuiTableFlags_SizingStretchProp)) return;
+  const int columns = view.path.empty() ? 3 : 4;  // nothing is to be added: there is no "then"
+  if (!ImGui::BeginTable("ions", columns, ImGuiTableFlags_SizingStretchProp)) return;
   for (const auto& [name, weight] :
        {std::pair{"ion", 1.2F}, {"mol/kg", 1.15F}, {"activity", 1.05F}, {"then", 1.05F}})
-    ImGui::TableSetupColumn(name, 0, weight);
+    if (std::string_view(name) != "then" || columns == 4) ImGui::TableSetupColumn(name, 0, weight);
   ImGui::PushFont(look.fonts.caption);
   ImGui::TableHeadersRow();
   for (const IonRow& ion : view.ions) {
@@ -55,8 +56,7 @@ void draw_ions(const ChemistryView& view, const Look& look, Intents& out) {
     ImGui::TableNextColumn();
     right_aligned(ion.activity);
     if (ImGui::IsItemHovered()) ImGui::SetTooltip("activity coefficient %s", ion.gamma.c_str());
-    ImGui::TableNextColumn();
-    then(ion.then, look);
+    if (columns == 4) ImGui::TableNextColumn(), then(ion.then, look);
   }
   ImGui::PopFont();
   ImGui::EndTable();
@@ -94,12 +94,16 @@ void draw_solids(const ChemistryView& view, const Look& look, Intents& out) {
 void draw_chemistry(const ChemistryView& view, const SourceView& source, PanelState& state, const Look& look,
                     Intents& out) {
   heading(look, "The chemistry of it");
+  if (view.ions.empty()) quiet(look, "It stands here once the tank's state can be worked out.");
+  if (view.ions.empty()) return;
   draw_figures(view, look);
   heading(look, "Free ions");
   draw_ions(view, look, out);
-  heading(look, "Room before it crystallises");
-  draw_solids(view, look, out);
-  if (!view.ions.empty()) copies(look, "the chemistry", [&] { return figures_of(view); });
+  if (!view.solids.empty()) {
+    heading(look, "Room before it crystallises");
+    draw_solids(view, look, out);
+  }
+  copies(look, "the chemistry", [&] { return figures_of(view); });
   if (!view.path.empty()) {
     heading(look, "Along the additions");
     for (const charts::Chart& chart : view.path) {

@@ -41,8 +41,8 @@ std::string figures_of(const ChemistryView& view) {
   text += '\n' + row({"free ion", "mol/kg", "activity", "activity then", "activity coefficient"});
   for (const IonRow& one : view.ions)
     text += row({one.name, one.molality, one.activity, one.then, one.gamma});
-  text += '\n' + row({"solid", "room at " + view.working_at, "at " + view.idle_at, "% of saturation", "then",
-                      "at " + view.idle_at, "then"});
+  text += '\n' + row({"solid", "room at " + view.working_at, "at " + view.idle_at,
+                      "% of saturation at " + view.working_at, "then", "at " + view.idle_at, "then"});
   const auto share = [](std::optional<double> of_saturation) {
     return of_saturation && *of_saturation > 0 ? short_figure(100 * *of_saturation) : std::string();
   };

@@ -33,6 +33,21 @@ void draw_tank(const TankOnLine& tank, int index, bool selected, const Look& loo
 void draw_line(const LineView& view, const Look& look, Intents& out) {
   quiet(look, view.shop);
   heading(look, "The line");
+  for (const UnreadTank& one : view.unread) {
+    standing(look, static_cast<int>(charts::State::stop), one.file + " cannot be read");
+    ImGui::PushID(one.file.c_str());
+    ImGui::PushFont(look.fonts.caption);
+    const bool open = ImGui::TreeNodeEx("why");
+    note_place(look, "why " + one.file);
+    if (ImGui::IsItemHovered()) ImGui::SetTooltip("%s", one.why.c_str());
+    if (open) {
+      said(look, look.palette.ink, one.why);
+      ImGui::TreePop();
+    }
+    ImGui::PopFont();
+    ImGui::PopID();
+  }
+  if (!view.unread.empty() && button(look, "Read them again")) out.emplace_back(OpenFolder{view.folder});
   int* shown = ImGui::GetStateStorage()->GetIntRef(ImGui::GetID("shown"), -1);
   for (int i = 0; i < static_cast<int>(view.tanks.size()); ++i) {
     if (i == view.selected && *shown != i) {

@@ -22,8 +22,14 @@ struct TankOnLine {
   std::string word;  ///< "in window", "add this shift", "stop: ..."; "not analysed"
 };
 
+/// A tank file that cannot be read as it stands.
+struct UnreadTank {
+  std::string file, why;  ///< "n-07.toml"; every problem with its line and its mend
+};
+
 struct LineView {
-  std::string shop;
+  std::string shop, folder;
+  std::vector<UnreadTank> unread;
   std::vector<TankOnLine> tanks;
   int selected = -1;
 };

@@ -147,6 +147,81 @@ TEST_CASE("every page's figures are in the chosen units", "[desktop]") {
   CHECK(desk.view().additions.additions.back().amount == Approx(2 * planned));
 }
 
+TEST_CASE("the path ends where the plan does, and leads what is told of the end", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  const auto ends_as_its_last_step = [&] {
+    const DeskView& view = desk.view();
+    INFO(view.additions.steps.back().then);
+    // "..., pH 4.20, 2400 L"
+    CHECK(view.additions.steps.back().then.find("pH " + view.state.rows.back().predicted) !=
+          std::string::npos);
+    CHECK(view.chemistry.figures.front().then == view.state.rows.back().predicted);
+    CHECK(view.chemistry.path.front().lines.front().y.back() ==
+          Approx(std::stod(view.state.rows.back().predicted)).margin(0.005));
+  };
+  ends_as_its_last_step();
+  ask(desk, DragAmount{1, 20});
+  ends_as_its_last_step();
+  const double before = desk.view().chemistry.path.front().lines.front().x.back();
+  ask(desk, DragAmount{1, 25});
+  CHECK(desk.view().chemistry.path.front().lines.front().x.back() == Approx(before + 5));
+
+  // A dragged amount is no list yet that somebody may sign for.
+  desk.handle(DragAmount{1, 30});
+  desk.handle(IssueSlip{});
+  CHECK(desk.view().slip.number == 0);
+  rest(desk);
+  CHECK(desk.view().slip.number == 0);
+  CHECK(desk.view().additions.checked);
+}
+
+TEST_CASE("a plan that takes bath out keeps that when its amounts are changed", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  ask(desk, TypeReading{0, Field::burette, "28.80"});
+  const auto& plans = desk.view().additions.plans;
+  const auto decant =
+      std::ranges::find_if(plans, [](const auto& plan) { return plan.starts_with("with decant"); });
+  REQUIRE(decant != plans.end());
+  ask(desk, ChoosePlan{static_cast<int>(decant - plans.begin())});
+  const AdditionRow out = desk.view().additions.additions.front();
+  CHECK(out.chemical == "bath taken out");
+  CHECK(desk.view().additions.steps.front().what.ends_with(" bath"));
+  const auto sulfate = [&] { return std::stod(desk.view().state.rows.front().predicted); };
+  const double planned = sulfate();
+  CHECK(planned < 300);  // inside its window, which only taking bath out brings it to
+
+  const int last = static_cast<int>(desk.view().additions.additions.size()) - 1;
+  ask(desk, DragAmount{last, 1.1 * desk.view().additions.additions.back().amount});
+  CHECK(desk.view().additions.edited);
+  CHECK(desk.view().additions.steps.front().what.ends_with(" bath"));
+  CHECK(sulfate() == Approx(planned).epsilon(2e-3));
+  ask(desk, DragAmount{0, out.amount / 2});  // the same water thins more of it less
+  CHECK(desk.view().additions.additions.front().amount == Approx(out.amount / 2));
+  CHECK(sulfate() > planned + 1);
+}
+
+TEST_CASE("a tank file that cannot be read stands in the line until it is mended", "[failure][desktop]") {
+  const Home home;
+  const fs::path shop = home.path / "shop";
+  fs::create_directories(shop);
+  fs::copy_file(PROJECT_DIR "/baths/al-1.toml", shop / "al-1.toml");
+  std::ofstream(shop / "n-07.toml") << "name = 3\n";
+  Desk desk(logging_to(home.path / "log.sqlite"), shop, [] {});
+  rest(desk);
+  REQUIRE(desk.view().line.unread.size() == 1);
+  CHECK(desk.view().line.unread.front().file == "n-07.toml");
+  CHECK(desk.view().line.unread.front().why.find("n-07.toml:1: name") != std::string::npos);
+  CHECK(desk.view().line.tanks.size() == 1);
+  fs::copy_file(PROJECT_DIR "/baths/n-07.toml", shop / "n-07.toml", fs::copy_options::overwrite_existing);
+  ask(desk, OpenFolder{desk.view().line.folder});
+  CHECK(desk.view().line.unread.empty());
+  CHECK(desk.view().line.tanks.size() == 2);
+}
+
 TEST_CASE("a sample is timed to the second, so that what was added in the same minute stays before it",
           "[desktop]") {
   const Home home;

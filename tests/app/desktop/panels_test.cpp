@@ -70,6 +70,11 @@ DeskView a_view() {
         {"N-" + std::to_string(i), "nickel", {0.9, 0.1, true}, charts::State::act, "add H₃BO₃"});
   view.line.selected = 3;
   view.tank_title = "N-3 nickel";
+  view.chemistry.working_at = "55 °C";
+  view.chemistry.idle_at = "18 °C";
+  view.chemistry.figures = {{"pH", "4.11", "4.20"}};
+  view.chemistry.ions = {{"Ni^2+", "Ni²⁺", "1.26", "0.0570", "0.0602", "0.0452", 1}};
+  view.chemistry.solids = {{"H3BO3", "H₃BO₃", "110 kg", "-18 kg", 0.45, 1.25, 0.5, 1.4, true}};
   view.readings.rows = {
       {"Ni²⁺", {"edta nickel", "a concentration"}, 0, "2 mL", "0.1 mol/L", "", "", false, "", "", ""}};
   view.state.rows = {{"nickel",
@@ -229,6 +234,12 @@ TEST_CASE("figures are copied as rows for a spreadsheet", "[unit][desktop]") {
         "component\tunit\tfound\tthen\taim\tstate\nnickel\tg/L\t70.0\t75.0\t75.0\tin window\n");
   CHECK(
       copied("copy the additions").starts_with("chemical\tamount\tunit\tcost\nboric acid\t14\tkg\t27 EUR\n"));
+  CHECK(copied("copy the chemistry") ==
+        "\tnow\tthen\npH\t4.11\t4.20\n\n"
+        "free ion\tmol/kg\tactivity\tactivity then\tactivity coefficient\n"
+        "Ni²⁺\t1.26\t0.0570\t0.0602\t0.0452\n\n"
+        "solid\troom at 55 °C\tat 18 °C\t% of saturation at 55 °C\tthen\tat 18 °C\tthen\n"
+        "H₃BO₃\t110 kg\t-18 kg\t45\t50\t125\t140\n");
   CHECK(copied("copy the path") == "pH\nkg added\tpH\n0\t4.1\n1\t4.2\n\n");
   view.page = PageName::forecast;
   view.forecast.limits = {{"aluminium", "day 41", "", "by-\tproduct", charts::State::act}};

@@ -390,6 +390,27 @@ TEST_CASE("bath is taken out where adding alone cannot help", "[unit][dosing]") 
     for (const dosing::Addition& addition : plan.additions) chemicals += addition.cost;
     CHECK(plan.cost == Approx(chemicals + 0.12 * plan.decant_L).epsilon(1e-9));
   }
+  SECTION("by somebody's own list as by the planner's") {
+    const bath::TankState strong = demo::state(330, 50, 42, 4.2, 2400);
+    const dosing::Plan planned_one = plan_of(planned(strong).plans, "with decant");
+    std::vector<dosing::Wanted> wanted;
+    for (const dosing::Addition& addition : planned_one.additions)
+      wanted.push_back({demo::tank().on_shelf(addition.chemical)->stock, addition.kg});
+    const auto checked = [&](double litres) {
+      return dosing::check_plan(demo::tank(), demo::chemistry(), strong, wanted, litres);
+    };
+    const dosing::Plan own = must(checked(planned_one.decant_L)).plans.front();
+    CHECK(own.decant_L == planned_one.decant_L);
+    CHECK(own.steps.front().takes_out);
+    CHECK(own.steps[1].number == 2);
+    CHECK(own.final_view.pH == Approx(planned_one.final_view.pH).margin(1e-4));
+    CHECK(demo::level(own.final_view, "NiSO4.6H2O") ==
+          Approx(demo::level(planned_one.final_view, "NiSO4.6H2O")).epsilon(1e-6));
+    CHECK_FALSE(checked(-1));
+    const auto too_much = checked(2500);
+    REQUIRE_FALSE(too_much);
+    CHECK_THAT(too_much.problems().front().text(), Catch::Contains("bath taken out: 2500 L"));
+  }
   SECTION("no room for what is missing") {
     bath::Tank tank = demo::tank();
     tank.freeboard = {10};

@@ -67,6 +67,9 @@ LogRow row_of(const logbook::Entry& entry, const std::optional<shifts::Calendar>
 LineView line_view(const ShopFolder& shop, const LogNow& log, int selected) {
   LineView view;
   view.selected = selected;
+  view.folder = shop.folder.string();
+  for (const UnreadFile& one : shop.unread)
+    view.unread.push_back({one.file.filename().string(), text(one.problems)});
   for (const bath::Tank& tank : *shop.tanks) {
     TankOnLine shown;
     const std::size_t space = tank.name.find(' ');
