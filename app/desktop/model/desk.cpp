@@ -465,28 +465,30 @@ void Desk::log_entry(Result<logbook::NewEntry> entry, const Names& names) {
   });
 }
 
-void Desk::admit(const AdmitPerson& asked) {
+void Desk::change_people(const Names& names, const work::PeopleChange& change, const std::string& done) {
   said_.clear();
-  signing_.start([session = signed_by(session_, asked.names), asked]() -> Result<std::string> {
-    const auto role = logbook::role_of(asked.role);
-    if (!role) return role.problems();
-    const auto logged = work::change_people(session, [&](logbook::Logbook& log, const auto& signatures) {
-      return log.admit(asked.name, *role, asked.pin, signatures);
-    });
+  signing_.start([session = signed_by(session_, names), change, done]() -> Result<std::string> {
+    const auto logged = work::change_people(session, change);
     if (!logged) return logged.problems();
-    return asked.name + " may sign now: entry " + std::to_string(logged->entry.seq) + ".";
+    return done + ": entry " + std::to_string(logged->entry.seq) + ".";
   });
 }
 
+void Desk::admit(const AdmitPerson& asked) {
+  const auto change = [asked](logbook::Logbook& log,
+                              const logbook::Signatures& signatures) -> Result<logbook::Entry> {
+    const auto role = logbook::role_of(asked.role);
+    if (!role) return role.problems();
+    return log.admit(asked.name, *role, asked.pin, signatures);
+  };
+  change_people(asked.names, change, asked.name + " may sign now");
+}
+
 void Desk::retire(const RetirePerson& asked) {
-  said_.clear();
-  signing_.start([session = signed_by(session_, asked.names), asked]() -> Result<std::string> {
-    const auto logged = work::change_people(session, [&](logbook::Logbook& log, const auto& signatures) {
-      return log.retire(asked.name, signatures);
-    });
-    if (!logged) return logged.problems();
-    return asked.name + " signs nothing any more: entry " + std::to_string(logged->entry.seq) + ".";
-  });
+  const auto change = [asked](logbook::Logbook& log, const logbook::Signatures& signatures) {
+    return log.retire(asked.name, signatures);
+  };
+  change_people(asked.names, change, asked.name + " signs nothing any more");
 }
 
 void Desk::set_shifts(const SetShifts& set) {

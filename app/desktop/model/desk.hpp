@@ -51,7 +51,8 @@ class Desk {
   void log_analysis(const Names& names);
   void issue_slip(const Names& names);
   void log_entry(Result<logbook::NewEntry> entry, const Names& names);
-  void admit(const AdmitPerson& admit);
+  void change_people(const Names& names, const work::PeopleChange& change, const std::string& done);
+  void admit(const AdmitPerson& asked);
   void retire(const RetirePerson& asked);
   void set_shifts(const SetShifts& set);
   void hand_over(const Names& names);
