@@ -2,6 +2,7 @@
 #include <stdlib.h>
 
 #include <algorithm>
+#include <bathwright/sheets/page.hpp>
 #include <catch2/catch.hpp>
 #include <chrono>
 #include <fstream>
@@ -317,6 +318,24 @@ TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
   CHECK_FALSE(desk.view().printed.sheets.empty());
   ask(desk, GoTo{PageName::log});
   CHECK_FALSE(desk.view().printed.open);
+
+  ForecastWork work;
+  std::string paper;
+  work.answer({{},
+               PROJECT_DIR "/baths/al-1.toml",
+               {},
+               PROJECT_DIR "/baths/policies/al-1.toml",
+               Levers{50, 1, 1.2, 100},
+               0},
+              {}, [&](const Forecasted& told) {
+                REQUIRE(told.problems.empty());
+                if (!told.sheet) return;
+                for (const std::string& line : sheets::text_of(*told.sheet))
+                  paper += " " + line.substr(std::min(line.find_first_not_of(" "), line.size()));
+              });
+  INFO(paper);
+  CHECK(paper.find("Policy: al-1.toml with bleed 50.0 L a day, work 1.20 times, 100 days.") !=
+        std::string::npos);
 }
 
 TEST_CASE("a plugin is looked at, allowed and withdrawn at the window", "[desktop]") {
