@@ -53,7 +53,9 @@ Range y_range(const Chart& chart) {
     const bool near = log ? limit.at > range.low / 100 && limit.at < range.high * 100
                           : limit.at > range.low - std::max(height, 0.5 * std::abs(range.low)) &&
                                 limit.at < range.high + std::max(height, 0.5 * std::abs(range.high));
-    if (near) take(limit.at);
+    if (!near) continue;
+    take(limit.at);
+    std::ranges::for_each(limit.y, take);
   }
   if (chart.least_height > range.high - range.low) {
     const double middle = (range.high + range.low) / 2;

@@ -108,3 +108,19 @@ TEST_CASE("a hand-over in other units says which", "[unit][command]") {
   CHECK_THAT(by_mass.out, Catch::Contains("H₃BO₃  g/L"));
   CHECK(bench.run(hand_over).out.find("g/L") == std::string::npos);
 }
+
+TEST_CASE("earlier results stand by the density logged with them", "[unit][command]") {
+  const Bench bench;
+  const std::string log = " --log shift.sqlite";
+  std::string earlier = app_test::content_of(app_test::readings);
+  earlier.replace(earlier.find("11.90 mL"), 8, "11.80 mL");
+  bench.write("earlier.toml", earlier);
+  REQUIRE(bench.run("analyse " + app_test::tank + " earlier.toml" + log).status == 1);
+  const std::string again = dose + log;
+  const auto row = std::regex("before +NiSO₄·6H₂O  NiCl₂·6H₂O  H₃BO₃ +pH\n.* 22\\.4 +4\\.09 +3\\.12 ");
+  const auto by_mass = bench.run(again + " --units '% w/w'").out;
+  INFO(by_mass);
+  CHECK(std::regex_search(by_mass, row));  // 263.4, 48.0 and 36.66 g/L in 1.1744 kg/L
+  // The log has no water of a solution, so that they are in g/L, and say so.
+  CHECK_THAT(bench.run(again + " --units 'mol/kg water'").out, Catch::Contains("H₃BO₃ g/L    pH"));
+}

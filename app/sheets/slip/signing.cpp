@@ -33,7 +33,9 @@ std::string re_analysis(const AdditionSlip& slip, const dosing::Plan& plan) {
 std::string units_note(const AdditionSlip& slip) {
   std::string note = slip.units.note();
   if (slip.units.needs_medium())
-    note += " Limits and what was found are at the density found, what is expected at the density then.";
+    note +=
+        " Limits and what was found stand by the density found, what is expected by the density then: the "
+        "same g/L are a smaller share of a denser tank.";
   return note;
 }
 

@@ -94,6 +94,13 @@ TEST_CASE("a limit near the values is in the picture, one far off is told in wor
   CHECK(canvas.says("limit 5000 (above)"));
 }
 
+TEST_CASE("a border that moves is in the picture as far as it goes", "[unit][charts]") {
+  Chart chart = rising();
+  chart.limits = {{150, true, "limit", {0, 14, 28}, {150, 170, 190}}};
+  const Frame frame = frame_of(chart, box);
+  CHECK(frame.at(28, 190).y > frame.plot.top - 1);
+}
+
 TEST_CASE("hatching ends at a border that moves", "[unit][charts]") {
   for (const bool upper : {true, false}) {
     Chart chart = rising();
