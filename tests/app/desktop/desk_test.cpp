@@ -329,8 +329,8 @@ TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
                0},
               {}, [&](const Forecasted& told) {
                 REQUIRE(told.problems.empty());
-                if (!told.sheet) return;
-                for (const std::string& line : sheets::text_of(*told.sheet))
+                if (!told.complete) return;
+                for (const std::string& line : sheets::text_of(sheets::forecast_page(told.in({}))))
                   paper += " " + line.substr(std::min(line.find_first_not_of(" "), line.size()));
               });
   INFO(paper);
