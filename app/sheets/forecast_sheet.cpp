@@ -379,7 +379,7 @@ std::string limit_words(const ForecastPage& page, const forecast::LimitMet& limi
            " " + unit.symbol;
   }
   const bool at_work = limit.cause == forecast::Cause::solid_at_work;
-  return limit.name.substr(0, limit.name.rfind(" at ")) + " at " +
+  return pretty(limit.name.substr(0, limit.name.rfind(" at "))) + " at " +
          page.units.degrees(at_work ? chemistry.working_temperature() : chemistry.idle_temperature());
 }
 
@@ -419,8 +419,8 @@ Page forecast_page(const ForecastPage& page) {
   charts::Page drawn = forecast_charts(page);
   Section figures{"Day by day", {}};
   if (!drawn.charts.empty()) {
+    figures.blocks.emplace_back(Paragraph{drawn.foot});  // above them: below it could be alone on a page
     figures.blocks.emplace_back(Charts{std::move(drawn.charts)});
-    figures.blocks.emplace_back(Paragraph{drawn.foot});
   }
   out.add(std::move(figures));
   return out;
