@@ -72,7 +72,16 @@ void draw_tank(const DeskView& view, PanelState& state, const Look& look, Intent
   }
 }
 
+/// Another page, tank or printed sheet begins at its top.
+void scroll_to_its_top(const DeskView& view, PanelState& state) {
+  std::string now = view.tank_title + (view.printed.open ? " printed " : " page ") +
+                    std::to_string(static_cast<int>(view.page));
+  if (now != state.in_sight) ImGui::SetScrollY(0);
+  state.in_sight = std::move(now);
+}
+
 void draw_page(const DeskView& view, PanelState& state, const Look& look, Intents& out) {
+  scroll_to_its_top(view, state);
   if (view.printed.open) return draw_printed(view.printed, look, out);
   switch (view.page) {
     case PageName::shift:
@@ -128,7 +137,7 @@ void draw_desk(const DeskView& view, PanelState& state, const Look& look, Intent
     ground.AddRectFilled({0, 0}, {all.x, look.px(pages_high)}, packed(look.palette.page));
     ground.AddRectFilled({0, all.y - look.px(status)}, all, packed(look.palette.page));
     draw_pages(view, state, look, out);
-    const bool narrow = is_cramped(look), with_chemistry = view.page == PageName::shift;
+    const bool narrow = is_cramped(look), with_chemistry = view.page == PageName::shift && !view.printed.open;
     const float foot = narrow ? cramped_strip : strip, top = look.px(pages_high),
                 body = all.y - top - look.px(foot + status), left = look.px(sides(look).line),
                 right = with_chemistry ? look.px(sides(look).chemistry) : 0;

@@ -172,7 +172,7 @@ void draw_settings(const DeskView& view, PanelState& state, const Look& look, In
   quiet(
       look,
       "Any unit may be typed. A bare number has the unit its field is headed with. What cannot be told in the "
-      "chosen unit is shown in g/L; printed sheets and the log have g/L, kg and L.");
+      "chosen unit is shown in g/L. Sheets are printed in these units; the log keeps g/L, kg, L and °C.");
   heading(look, "Look");
   for (const auto& [words, scale] :
        {std::pair{"100 %", 1.0F}, {"125 %", 1.25F}, {"150 %", 1.5F}, {"200 %", 2.0F}}) {

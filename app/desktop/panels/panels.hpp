@@ -46,6 +46,7 @@ struct PanelState {
   std::optional<PageName> awaited;  ///< asked for with the keys: the focus goes there once it is drawn
   std::string agreed_plugin, withdrawn_plugin;  ///< SHA-256 of what is being decided
   std::string leaving;                          ///< who is to be retired
+  std::string in_sight;                         ///< the page and the tank that were drawn last
 };
 
 /// Those who sign, as chosen in the sign panel.
