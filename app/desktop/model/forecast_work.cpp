@@ -22,12 +22,11 @@ forecast::Policy moved(forecast::Policy policy, const Levers& levers) {
 }
 
 /// What of a policy is not as its file has it: ", with bleed 120 L a day, drag-out 1.2 times".
-std::string changes(const forecast::Policy& policy, const Levers& levers) {
-  const Levers written = levers_of(policy);
+std::string changes(const Levers& written, const Levers& levers, const sheets::Units& units) {
   std::string text;
   const auto add = [&](const std::string& words) { text += (text.empty() ? " with " : ", ") + words; };
   if (levers.bleed_L_per_day != written.bleed_L_per_day)
-    add("bleed " + sheets::figure(levers.bleed_L_per_day, 3) + " L a day");
+    add("bleed " + units.volume(levers.bleed_L_per_day, 3) + " a day");
   if (levers.drag_out != written.drag_out) add("drag-out " + sheets::figure(levers.drag_out, 3) + " times");
   if (levers.load != written.load) add("work " + sheets::figure(levers.load, 3) + " times");
   return text;
@@ -66,7 +65,7 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
   told.currency = shop.tank.currency;
   told.notes = forecast->notes();
   for (const Problem& problem : run->ended) told.notes.push_back(problem.text());
-  told.policy = question.policy_file.filename().string() + changes(*read, told.levers);
+  told.written = levers_of(*read);
   told.forecast = *forecast;
   told.run = std::make_shared<const forecast::Run>(*std::move(run));
   told.limits = forecast->limits(*told.run);
@@ -96,8 +95,11 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
 }
 
 sheets::ForecastPage Forecasted::in(const sheets::Units& units) const {
-  return {shop->tank, *forecast, *run, bands.get(), limits, settled, why_unsettled,
-          bleeds,     policy,    from, {},          {},     units};
+  return {shop->tank,    *forecast, *run,
+          bands.get(),   limits,    settled,
+          why_unsettled, bleeds,    policy_file.filename().string() + changes(written, levers, units),
+          from,          {},        {},
+          units};
 }
 
 }  // namespace bathwright::desktop

@@ -32,7 +32,7 @@ struct Forecasted {
   std::filesystem::path tank_file, policy_file;
   Problems problems;
   std::shared_ptr<const work::Shop> shop;  ///< where there are no problems
-  Levers levers;                           ///< as computed with
+  Levers levers, written;                  ///< as computed with, and as the policy has them
   std::vector<forecast::LimitMet> limits;
   std::vector<std::string> dates;  ///< of the limits, where the policy has a calendar date
   std::vector<sheets::BleedToHold> bleeds;
@@ -43,8 +43,8 @@ struct Forecasted {
   std::shared_ptr<const forecast::Run> run;      ///< of the policy as it stands
   std::shared_ptr<const forecast::Bands> bands;  ///< nullptr: not drawn yet
   std::optional<std::vector<double>> settled;
-  std::string why_unsettled, policy;  ///< the second with what was moved of it
-  bool complete = false;              ///< all but the bands is worked out, so that it may be printed
+  std::string why_unsettled;
+  bool complete = false;  ///< all but the bands is worked out, so that it may be printed
   /// To show, to save and to print; where there are no problems. It refers to this.
   [[nodiscard]] sheets::ForecastPage in(const sheets::Units& units) const;
 };

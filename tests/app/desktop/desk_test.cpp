@@ -330,6 +330,8 @@ TEST_CASE("a forecast is printed with what was moved", "[desktop]") {
               {}, [&](const Forecasted& told) {
                 REQUIRE(told.problems.empty());
                 if (!told.complete) return;
+                const sheets::Units gallons(*sheets::unit_names("US gal"));
+                CHECK_THAT(told.in(gallons).policy_file, Catch::Contains("bleed 13.2 US gal a day"));
                 for (const std::string& line : sheets::text_of(sheets::forecast_page(told.in({}))))
                   paper += " " + line.substr(std::min(line.find_first_not_of(" "), line.size()));
               });
