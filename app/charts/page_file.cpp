@@ -6,6 +6,7 @@
 #include <bathwright/charts/page_file.hpp>
 #include <cctype>
 #include <memory>
+#include <system_error>
 
 #include "cairo_canvas.hpp"
 
@@ -85,6 +86,10 @@ Outcome write_page(const std::filesystem::path& file, const Page& page) {
   if (!write)
     return Problem{Fault::bad_input, file.string(), "is no kind of picture that is written here",
                    "a name that ends in .svg, .png or .pdf", ""};
+  std::error_code failed;
+  if (file.has_parent_path() && !std::filesystem::is_directory(file.parent_path(), failed))
+    return Problem{Fault::io, file.string(), "could not be written: there is no such folder", "",
+                   "Check the folder and its rights."};
   std::string bytes;
   if (const cairo_status_t status = write(bytes, page); status != CAIRO_STATUS_SUCCESS)
     return Problem{Fault::io, file.string(),

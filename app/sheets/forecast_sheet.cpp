@@ -132,7 +132,7 @@ Section levels_by_day(const ForecastPage& page) {
   if (page.steady_state && page.units.needs_medium())
     section.blocks.emplace_back(Paragraph{settles_at(page, quantities)});
   if (!page.steady_state)
-    section.blocks.emplace_back(Paragraph{"It does not settle: " + page.why_unsettled + "."});
+    section.blocks.emplace_back(Paragraph{"No steady state: " + page.why_unsettled + "."});
   return section;
 }
 
@@ -304,6 +304,11 @@ Section rinses(const ForecastPage& page) {
   return section;
 }
 
+/// Of another policy, whose densities are not at hand: in g/L for the units that need them.
+std::string first_limit(const ForecastPage& page, const std::string& name) {
+  return page.units.needs_medium() ? name : named_limit(page, name);
+}
+
 Section side_by_side(const ForecastPage& page) {
   Section section{"Policies side by side, a day", {}};
   if (page.policies.empty()) return section;
@@ -318,7 +323,7 @@ Section side_by_side(const ForecastPage& page) {
     table.add({std::filesystem::path(one.file).stem().string(), fixed(s.cost, 2), fixed(s.waste_cost, 2),
                fixed(s.cost + s.waste_cost, 2), figure(page.units.volume_value(s.waste_L), 3),
                s.holds ? "none in " + std::to_string(one.horizon_days) + " days"
-                       : named_limit(page, s.met.front().name) + ", day " + fixed(*s.met.front().day, 1)});
+                       : first_limit(page, s.met.front().name) + ", day " + fixed(*s.met.front().day, 1)});
   }
   section.blocks.emplace_back(std::move(table));
   const PolicySummary* best = cheapest_that_holds(page.policies);

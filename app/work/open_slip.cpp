@@ -19,6 +19,7 @@ Value member(const Json& object, const char* key, Value otherwise) {
 SlipStep step_of(const Json& json) {
   SlipStep step;
   step.number = member(json, "number", 0);
+  step.takes_out = member(json, "takes_out", false);
   step.chemical = member<std::string>(json, "chemical", "");
   step.name = member<std::string>(json, "name", step.chemical);
   step.unit = member<std::string>(json, "unit", "");
@@ -64,7 +65,7 @@ Result<std::optional<OpenSlip>> open_slip(const logbook::Logbook& log, const std
   const auto answers = log.list(filter);
   if (!answers) return answers.problems();
   for (const logbook::Entry& answer : *answers) {
-    if (answer.kind != logbook::EntryKind::addition) continue;
+    if (answer.kind != logbook::EntryKind::addition && answer.kind != logbook::EntryKind::dump) continue;
     const auto corrected = log.is_corrected(answer.seq);
     if (!corrected) return corrected.problems();
     const int number = *corrected ? 0 : member(Json::parse(answer.body, nullptr, false), "step", 0);
@@ -83,8 +84,10 @@ Result<logbook::NewEntry> step_done(const OpenSlip& slip, int step) {
   if (found->done_as)
     return Problem{
         Fault::refused, where,
-        "step " + std::to_string(step) + " is in the tank already: entry " + std::to_string(*found->done_as),
-        "", "If that entry is wrong, correct it first."};
+        "step " + std::to_string(step) + " is done already: entry " + std::to_string(*found->done_as), "",
+        "If that entry is wrong, correct it first."};
+  if (found->takes_out)
+    return answer_to(slip, logbook::EntryKind::dump, {{"volume_L", found->amount}, {"step", found->number}});
   return answer_to(slip, logbook::EntryKind::addition,
                    {{"chemical", found->chemical},
                     {"amount", found->amount},

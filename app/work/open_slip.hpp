@@ -8,10 +8,11 @@ namespace bathwright::work {
 
 struct SlipStep {
   int number = 0;
+  bool takes_out = false;  ///< `amount` L of bath to the waste treatment
   std::string chemical, name, unit, how;
   double amount = 0, wait_h = 0;
   int portion = 1, portions = 1;
-  std::optional<std::int64_t> done_as;  ///< the addition that carried it out
+  std::optional<std::int64_t> done_as;  ///< the addition or dump that carried it out
   std::string done_at;                  ///< UTC, as the log has it
 };
 

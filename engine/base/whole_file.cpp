@@ -13,8 +13,10 @@ Outcome write_whole(const std::filesystem::path& file, std::string_view contents
     std::ofstream out(part, std::ios::binary);
     out << contents;
     out.close();
-    if (!out)
+    if (!out) {
+      std::filesystem::remove(part, failed);
       return Problem{Fault::io, part.string(), "cannot be written", "", "Check the folder and the disk."};
+    }
   }
   std::filesystem::rename(part, file, failed);
   if (failed)

@@ -192,12 +192,7 @@ constexpr double near_enough = 1e-6;
 Result<Levels> Forecast::steady_state(const bath::TankState& start) const {
   const auto endless = Endless::of(*prepared_, start);
   if (!endless) return endless.problems();
-  auto levels = endless->levels();
-  if (levels) return levels;
-  Problems problems = levels.problems();
-  Problem& first = problems.front();
-  first.what = "what builds up passes what the model describes before that (" + first.what + ")";
-  return problems;
+  return endless->levels();
 }
 
 // What settles is near p load/(D load + B): its inverse is nearly a straight line in the bleed B and in

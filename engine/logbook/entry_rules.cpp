@@ -87,6 +87,7 @@ void check_about(const NewEntry& entry, Problems& problems) {
         problems.push_back(bad("about", "no slip named", "the number of the slip it approves or closes"));
       break;
     case EntryKind::addition:
+    case EntryKind::dump:  // a slip's first step may take bath out
       break;
     default:
       if (entry.about)

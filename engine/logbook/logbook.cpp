@@ -41,9 +41,9 @@ Outcome check_answered(const NewEntry& entry, const std::optional<Entry>& answer
                  "log what was added beside it without naming the slip");
 }
 
-/// An addition waits for its slip's approval where the tank asks for one.
+/// A step of a slip waits for its approval where the tank asks for one.
 Outcome check_approval(const Logbook& log, const Roll& roll, const NewEntry& entry) {
-  if (entry.kind != EntryKind::addition || !entry.about ||
+  if ((entry.kind != EntryKind::addition && entry.kind != EntryKind::dump) || !entry.about ||
       !roll.asks_second(entry.tank, EntryKind::slip_approved))
     return Done{};
   const auto slip = log.find(*entry.about);
@@ -51,7 +51,7 @@ Outcome check_approval(const Logbook& log, const Roll& roll, const NewEntry& ent
   const auto approved = approved_by(log, *slip);
   if (!approved) return approved.problems();
   if (!approved->empty()) return Done{};
-  return Problem{Fault::refused, "addition",
+  return Problem{Fault::refused, std::string(name(entry.kind)),
                  fmt::format("slip {} is not approved, and tank {} asks for a second person's approval",
                              *entry.about, entry.tank),
                  "an approved slip",

@@ -98,7 +98,13 @@ HeadUnits Desk::head_units() const {
   return heads;
 }
 
-void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
+void Desk::open_shop(const std::filesystem::path& as_typed, bool keep_it) {
+  std::error_code failed;
+  const auto whole = [&](const std::filesystem::path& path) {
+    const std::filesystem::path all = std::filesystem::weakly_canonical(path, failed);
+    return all.has_filename() ? all : all.parent_path();
+  };
+  const std::filesystem::path folder = whole(as_typed);
   auto shop = read_shop(folder);
   if (!shop) {
     fault_ = text(shop.problems());
@@ -109,11 +115,11 @@ void Desk::open_shop(const std::filesystem::path& folder, bool keep_it) {
   // The demonstration has a log of its own: what is tried on it never stands between a real shop's entries.
   session_.log_file = given_log_;
   if (given_log_.empty())
-    session_.log_file = (folder == work::data_folder() / "demonstration" ? folder / "shift-log.sqlite"
-                                                                         : work::log_path(session_))
+    session_.log_file = (folder == whole(work::data_folder() / "demonstration") ? folder / "shift-log.sqlite"
+                                                                                : work::log_path(session_))
                             .string();
   if (keep_it) {
-    settings_.shop = std::filesystem::absolute(folder);
+    settings_.shop = folder;
     settings_changed();
   }
   printing_.look_in(std::filesystem::path(session_.log_file).parent_path() / "printed");
@@ -131,7 +137,8 @@ void Desk::open_tank(int tank) {
   worked_.reset();
   draft_.reset();
   own_.reset();
-  plan_ = 0;
+  plan_.clear();
+  log_.slip.reset();
   said_.clear();
   policies_ = shop_.policies(static_cast<std::size_t>(tank));
   policy_ = 0;
@@ -150,7 +157,8 @@ void Desk::handle(const Intent& intent) {
                           printing_.close();
                           fault_.clear();
                           said_.clear();
-                          if (to.page == PageName::forecast && !forecasted_) ask_forecast();
+                          if (to.page == PageName::forecast && (!forecasted_ || forecast_is_old()))
+                            ask_forecast();
                           if (to.page == PageName::trends) ask_trends();
                           if (to.page == PageName::bath_types) {
                             examined_.reset();
@@ -178,7 +186,9 @@ void Desk::handle(const Intent& intent) {
                           if (draft_) draft_->start_again(blank_), draft_changed();
                         },
                         [&](const ChoosePlan& chosen) {
-                          plan_ = chosen.plan;
+                          if (worked_ && worked_->sheet &&
+                              chosen.plan < static_cast<int>(worked_->sheet->plans.size()))
+                            plan_ = worked_->sheet->plans[static_cast<std::size_t>(chosen.plan)].kind;
                           own_.reset();
                           ask();
                         },
@@ -286,15 +296,14 @@ void Desk::draft_changed() {
   if (const Outcome kept = keep_draft(draft_file(), with_units(draft_->now(), head_units())); !kept)
     fault_ = text(kept.problems());
   own_.reset();
-  plan_ = 0;
+  plan_.clear();
   ask();
 }
 
 /// The plan that is shown becomes a list of the person's own.
 void Desk::begin_edit() {
   if (own_ || !worked_ || !worked_->sheet || worked_->sheet->plans.empty()) return;
-  const auto& plans = worked_->sheet->plans;
-  const dosing::Plan& plan = plans[std::min(static_cast<std::size_t>(plan_), plans.size() - 1)];
+  const dosing::Plan& plan = worked_->sheet->plans[index_of_plan(*worked_->sheet, plan_)];
   own_.emplace();
   if (plan.decant_L > 0) own_->take_out_L = plan.decant_L;
   for (const auto& addition : plan.additions) own_->kg.emplace_back(addition.chemical, addition.kg);
@@ -314,7 +323,7 @@ void Desk::drag(const DragAmount& drag) {
   }
   if (row >= own_->kg.size()) return;
   auto& [id, kg] = own_->kg[row];
-  const matter::StockChemical* stock = stock_of(*tank(), id);
+  const matter::StockChemical* stock = stock_of(worked_->shop->tank, id);
   if (!stock) return;
   const double amount = drag.amount / units_.amount_unit(stock->liquid ? "L" : "kg").per_one;
   kg = stock->liquid ? amount * stock->kg_per_L : amount;
@@ -322,10 +331,9 @@ void Desk::drag(const DragAmount& drag) {
 }
 
 void Desk::add_chemical(const std::string& chemical) {
-  const bath::Tank* open = tank();
-  if (!open || !stock_of(*open, chemical) || !worked_ || !worked_->sheet) return;
+  if (!worked_ || !worked_->sheet || !stock_of(worked_->shop->tank, chemical)) return;
   begin_edit();
-  if (!own_) own_.emplace();
+  if (!own_) return;
   constexpr double first_kg = 1;  // something to drag from
   own_->kg.emplace_back(chemical, first_kg);
   ask();
@@ -333,6 +341,7 @@ void Desk::add_chemical(const std::string& chemical) {
 
 void Desk::ask() {
   if (open_ < 0) return;
+  if (!draft_ || nothing_typed(draft_->now())) readings_ = {};
   Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, own_, plan_, log_.last};
   if (draft_ && !nothing_typed(draft_->now())) {
     const std::filesystem::path file = draft_file().replace_extension(".toml");
@@ -354,8 +363,13 @@ void Desk::ask_log() {
     log_job_.ask({session_, shop_.tanks, open->name, filter_, shown_entry_});
 }
 
+std::pair<std::string, std::int64_t> Desk::forecast_starts() const {
+  return {worked_ && worked_->analysed ? worked_->readings : std::string(), log_.last};
+}
+
 void Desk::ask_forecast() {
   if (open_ < 0 || policies_.empty()) return;
+  forecast_of_ = forecast_starts();
   const auto policy = std::min(static_cast<std::size_t>(policy_), policies_.size() - 1);
   std::filesystem::path readings;
   if (worked_ && worked_->analysed) readings = worked_->readings_file;
@@ -393,15 +407,31 @@ void Desk::withdraw_plugin(const WithdrawPlugin& asked) {
 void Desk::log_analysis(const Names& names) {
   if (!worked_ || !worked_->analysed || !worked_->shop) return;
   said_.clear();
-  signing_.start([session = signed_by(session_, names), worked = *worked_]() -> Result<std::string> {
-    auto entry = work::entry_computed(
-        *worked.shop, worked.readings_file.string(), logbook::EntryKind::analysis,
-        work::analysis_document(worked.shop->tank, worked.shop->chemistry, worked.analysed->analysis));
-    if (!entry) return entry.problems();
-    const auto logged = work::append_to_log(session, *std::move(entry));
-    if (!logged) return logged.problems();
-    return work::words(*logged);
-  });
+  const auto file = readings_to_sign();
+  if (!file) return;
+  signing_.start(
+      [session = signed_by(session_, names), worked = *worked_, file = *file]() -> Result<std::string> {
+        auto entry = work::entry_computed(
+            *worked.shop, file, logbook::EntryKind::analysis,
+            work::analysis_document(worked.shop->tank, worked.shop->chemistry, worked.analysed->analysis));
+        if (!entry) return entry.problems();
+        const auto logged = work::append_to_log(session, *std::move(entry));
+        if (!logged) return logged.problems();
+        return work::words(*logged);
+      });
+}
+
+std::optional<std::string> Desk::readings_to_sign() {
+  if (worked_->readings != readings_.second) {
+    fault_ = "The readings were changed just now: see what they come to, then sign.";
+    return std::nullopt;
+  }
+  const std::filesystem::path file = draft_file().replace_extension(".signed.toml");
+  if (const Outcome written = write_whole(file, worked_->readings); !written) {
+    fault_ = text(written.problems());
+    return std::nullopt;
+  }
+  return file.string();
 }
 
 void Desk::issue_slip(const Names& names) {
@@ -409,20 +439,20 @@ void Desk::issue_slip(const Names& names) {
   said_.clear();
   if (signing_.busy()) return;
   if (worked_->own_of != own_) {
-    fault_ = "The list is still being checked, or could not be: nothing is issued.";
+    fault_ = "The list is still being checked: nothing is issued.";
     return;
   }
+  const auto file = readings_to_sign();
+  if (!file) return;
   being_printed_ = std::make_shared<PrintedSheet>();
-  signing_.start([session = signed_by(session_, names), worked = *worked_, plan = plan_, units = units_,
-                  printed = being_printed_, paper = paper_of(settings_),
+  signing_.start([session = signed_by(session_, names), worked = *worked_, file = *file, plan = plan_,
+                  units = units_, printed = being_printed_, paper = paper_of(settings_),
                   folder = printing_.folder()]() -> Result<std::string> {
     // The log may have gone on since the readings were worked out.
-    const auto fresh = work::analyse(session, *worked.shop, worked.readings_file.string());
+    const auto fresh = work::analyse(session, *worked.shop, file);
     if (!fresh) return fresh.problems();
     dosing::AdditionSheet sheet = worked.own ? *worked.own : *worked.sheet;
-    if (!worked.own)
-      std::swap(sheet.plans.front(),
-                sheet.plans[std::min(static_cast<std::size_t>(plan), sheet.plans.size() - 1)]);
+    if (!worked.own) std::swap(sheet.plans.front(), sheet.plans[index_of_plan(sheet, plan)]);
     constexpr std::size_t earlier_results = 3;
     const auto history = work::history_of(session, worked.shop->tank.name, earlier_results, fresh->logged_as);
     if (!history) return history.problems();
@@ -431,8 +461,7 @@ void Desk::issue_slip(const Names& names) {
       return Problem{Fault::refused, "slip", "none is issued: " + why, "", "Settle that first."};
     work::Json doc = work::dose_document(*worked.shop, sheet, fresh->changed_since);
     doc["stops"] = stops;
-    const auto logged =
-        work::log_dose(session, *worked.shop, worked.readings_file.string(), *fresh, doc, true);
+    const auto logged = work::log_dose(session, *worked.shop, file, *fresh, doc, true);
     if (!logged) return logged.problems();
     const std::optional<work::LoggedDose> issued = *logged;
     *printed = {work::page_of(session, *worked.shop, {*fresh, sheet, stops, *history, issued, units}), paper,
@@ -536,12 +565,20 @@ void Desk::save(const SaveCharts& asked) {
   if (asked.charts == Charts::trends) page = {tank()->name, {"control charts"}, view_.trends.charts, ""};
   if (asked.charts == Charts::path)
     page = {tank()->name, {"along the planned additions"}, view_.chemistry.path, "Dashed: computed."};
+  // A bare name goes beside the printed sheets, not to wherever the program was started.
+  std::filesystem::path file = asked.file;
+  if (file.is_relative()) {
+    const std::filesystem::path charts = printing_.folder().parent_path() / "charts";
+    std::error_code failed;
+    std::filesystem::create_directories(charts, failed);
+    file = charts / file;
+  }
   const Outcome saved = page.charts.empty()
                             ? Outcome(Problem{Fault::bad_input, asked.file, "there is nothing to save yet",
                                               "", "Work it out first."})
-                            : charts::write_page(asked.file, page);
+                            : charts::write_page(file, page);
   if (saved)
-    said_ = "Saved as " + std::filesystem::absolute(asked.file).string() + ".";
+    said_ = "Saved as " + file.string() + ".";
   else
     fault_ = text(saved.problems());
 }
@@ -549,10 +586,12 @@ void Desk::save(const SaveCharts& asked) {
 void Desk::print_forecast() {
   if (!forecasted_ || !forecasted_->complete) return;
   const std::string name = "forecast-" + forecasted_->tank_file.stem().string() + ".pdf";
-  const auto sheet = std::make_shared<const PrintedSheet>(PrintedSheet{
+  const auto sheet = std::make_shared<PrintedSheet>(PrintedSheet{
       sheets::forecast_page(forecasted_->in(units_)), paper_of(settings_), printing_.folder() / name});
+  const std::string words = print(*sheet);
+  (sheet->file.empty() ? fault_ : said_) = words;
+  if (sheet->file.empty()) return;
   fault_.clear();
-  said_ = print(*sheet);
   printing_.add(sheet);
   printing_.show();
 }
@@ -562,15 +601,21 @@ bool Desk::update() {
     changed_ = true;
     if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)]) {
       if (!answer->now && worked_ && worked_->now) {
-        // What cannot be read as it stands takes the plans away, and leaves the tank as it was last known.
+        // What cannot be worked out takes the plans away, and leaves the tank as it was last known.
         answer->now = worked_->now;
         answer->shop = worked_->shop;
-        answer->read = sheets::StateRead{"as it was before: the readings cannot be read as they stand",
+        answer->read = sheets::StateRead{"as it was before: it cannot be worked out as things stand",
                                          worked_->shop->tank.temperature,
                                          worked_->now->pH,
                                          {}};
       }
       worked_ = std::move(answer);
+      if (worked_->sheet && !plan_.empty() &&
+          std::ranges::find(worked_->sheet->plans, plan_, &dosing::Plan::kind) ==
+              worked_->sheet->plans.end()) {
+        said_ = "The plan \"" + plan_ + "\" is no longer among them: the first is shown.";
+        plan_.clear();
+      }
       if (worked_->shop && !draft_) {
         blank_ = blank_draft(worked_->shop->tank, worked_->shop->type());
         auto kept = kept_draft(draft_file(), blank_);
@@ -586,9 +631,11 @@ bool Desk::update() {
     log_ = *std::move(answer);
     if (went_on) ask();
   }
+  if (view_.page == PageName::forecast && forecast_is_old()) ask_forecast();
   if (auto answer = forecast_job_.take()) {
     changed_ = true;
-    forecasted_ = std::move(answer);
+    if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)])
+      forecasted_ = std::move(answer);
   }
   if (auto answer = trends_job_.take()) {
     changed_ = true;
@@ -654,6 +701,11 @@ void Desk::show() {
   view_.state = worked ? state_view(*worked, units_) : StateView{};
   view_.additions = worked ? additions_view(*worked, plan_, own_, units_) : AdditionsView{};
   view_.additions.working = tank_job_.working();
+  const bool retyped = worked && worked->readings != readings_.second;
+  if (retyped && view_.additions.ready) {
+    view_.additions.ready = false;
+    view_.additions.verdict = "the readings were changed: they are being worked out";
+  }
   view_.chemistry = worked ? chemistry_view(*worked, units_) : ChemistryView{};
   view_.slip = slip_view(log_.slip, log_.calendar, units_);
   view_.sign = {work::signer(session_),
@@ -661,7 +713,7 @@ void Desk::show() {
                 fault_,
                 said_,
                 {},
-                worked && worked->analysed && worked->problems.empty(),
+                worked && worked->analysed && worked->problems.empty() && !retyped,
                 signing_.busy(),
                 worked && worked->analysed && worked->analysed->logged_as.has_value()};
   view_.people.clear();
@@ -676,7 +728,7 @@ void Desk::show() {
   view_.log.filter = filter_;
   view_.log.file = session_.log_file;
   view_.log.shown = shown_entry_;
-  view_.hand_over = {log_.hand_over_text, log_.calendar.has_value()};
+  view_.hand_over = {{}, log_.calendar.has_value()};
   if (view_.page == PageName::hand_over && log_.told && log_.calendar)
     view_.hand_over.text =
         sheets::text_of(sheets::hand_over_page(*log_.told, *log_.calendar, work::signer(session_), units_));

@@ -45,10 +45,16 @@ class Desk {
   void ask();
   void ask_log();
   void ask_forecast();
+  /// What a forecast goes out from: the readings that are worked out, the last entry of the log.
+  [[nodiscard]] std::pair<std::string, std::int64_t> forecast_starts() const;
+  [[nodiscard]] bool forecast_is_old() const { return forecast_of_ != forecast_starts(); }
   void ask_trends();
   void allow_plugin(const AllowPlugin& asked);
   void withdraw_plugin(const WithdrawPlugin& asked);
   void log_analysis(const Names& names);
+  /// A file of its own for what the shown figures are of: what is typed from now on is not signed. Nothing
+  /// where something was typed since, which is told.
+  std::optional<std::string> readings_to_sign();
   void issue_slip(const Names& names);
   void log_entry(Result<logbook::NewEntry> entry, const Names& names);
   void change_people(const Names& names, const work::PeopleChange& change, const std::string& done);
@@ -75,8 +81,8 @@ class Desk {
   Draft blank_;
   std::vector<int> line_of_row_;
   std::pair<std::filesystem::path, std::string>
-      readings_;  ///< the file of what is typed, as it was written last
-  int plan_ = 0;
+      readings_;                ///< the file of what is typed, as it was written last
+  std::string plan_;            ///< kind of the chosen one; empty: the first
   std::optional<OwnList> own_;  ///< the plan that is shown, changed by hand
   std::optional<Worked> worked_;
   LogNow log_;
@@ -86,6 +92,7 @@ class Desk {
   int policy_ = 0;
   std::optional<Levers> levers_;
   std::optional<Forecasted> forecasted_;
+  std::pair<std::string, std::int64_t> forecast_of_;  ///< what was asked for last
   std::optional<TrendsAnswer> trended_;
   std::optional<Examination> examined_;
   std::shared_ptr<PrintedSheet> being_printed_;  ///< filled by what is being signed

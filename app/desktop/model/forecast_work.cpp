@@ -36,6 +36,7 @@ std::string changes(const Levers& written, const Levers& levers, const sheets::U
 
 void ForecastWork::answer(const ForecastQuestion& question, const std::stop_token& stop,
                           const std::function<void(Forecasted)>& give) {
+  progress_ = 0;
   Forecasted told;
   told.tank_file = question.tank_file;
   told.policy_file = question.policy_file;
@@ -43,14 +44,10 @@ void ForecastWork::answer(const ForecastQuestion& question, const std::stop_toke
     told.problems = problems;
     give(told);
   };
-  if (!shop_ || shop_file_ != question.tank_file) {
-    auto shop = work::open_shop(question.session, question.tank_file.string());
-    if (!shop) return fail(shop.problems());
-    shop_ = std::make_shared<const work::Shop>(*std::move(shop));
-    shop_file_ = question.tank_file;
-  }
-  told.shop = shop_;
-  const work::Shop& shop = *shop_;
+  const auto kept = kept_.open(question.session, question.tank_file);
+  if (!kept) return fail(kept.problems());
+  told.shop = *kept;
+  const work::Shop& shop = **kept;
   const auto start = work::starting_state(question.session, shop, question.readings_file.string());
   if (!start) return fail(start.problems());
   const auto read = work::policy_from(*start, question.policy_file.string(), shop.type());

@@ -9,6 +9,7 @@
 #include <memory>
 #include <stop_token>
 
+#include "kept_shop.hpp"
 #include "work/tank_state.hpp"
 
 namespace bathwright::desktop {
@@ -57,8 +58,7 @@ class ForecastWork {
   [[nodiscard]] double progress() const { return progress_; }
 
  private:
-  std::shared_ptr<const work::Shop> shop_;
-  std::filesystem::path shop_file_;
+  KeptShop kept_;
   std::atomic<double> progress_ = 0;
 };
 

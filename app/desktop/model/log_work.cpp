@@ -1,7 +1,6 @@
 #include "log_work.hpp"
 
 #include <algorithm>
-#include <bathwright/sheets/hand_over_sheet.hpp>
 #include <bathwright/sheets/log_sheet.hpp>
 
 namespace bathwright::desktop {
@@ -54,8 +53,6 @@ Outcome fill_in(LogNow& now, const LogQuestion& question, const logbook::Logbook
       auto told = hand_over::hand_over(log, *now.calendar, *shift, *question.tanks, time);
       if (!told) return told.problems();
       now.told = *std::move(told);
-      now.hand_over_text =
-          sheets::text_of(sheets::hand_over_page(*now.told, *now.calendar, work::signer(question.session)));
     }
   }
   for (const bath::Tank& tank : *question.tanks) {

@@ -33,11 +33,10 @@ struct LogNow {
   std::vector<logbook::Person> people;
   std::optional<shifts::Calendar> calendar;
   std::optional<hand_over::HandOver> told;  ///< of the shift that runs, where shifts are set
-  std::vector<std::string> hand_over_text;
-  std::map<std::string, LastSeen> seen;  ///< by tank
-  std::optional<work::OpenSlip> slip;    ///< of the open tank
-  std::vector<logbook::Entry> entries;   ///< newest first, at most `most_entries`
-  std::vector<std::string> entry_text;   ///< the one shown in full
+  std::map<std::string, LastSeen> seen;     ///< by tank
+  std::optional<work::OpenSlip> slip;       ///< of the open tank
+  std::vector<logbook::Entry> entries;      ///< newest first, at most `most_entries`
+  std::vector<std::string> entry_text;      ///< the one shown in full
 };
 
 inline constexpr std::size_t most_entries = 2000;

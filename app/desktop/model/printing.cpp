@@ -12,11 +12,12 @@ constexpr std::size_t most_files = 30;
 
 }  // namespace
 
-std::string print(const PrintedSheet& sheet) {
+std::string print(PrintedSheet& sheet) {
   const auto pdf = sheets::pdf_of(sheet.page, sheet.paper);
   const Outcome written = pdf ? write_whole(sheet.file, *pdf) : Outcome(pdf.problems());
-  return written ? "To print: " + sheet.file.string() + "."
-                 : "It could not be printed: " + text(written.problems());
+  if (written) return "To print: " + sheet.file.string() + ".";
+  sheet.file.clear();
+  return "It could not be printed: " + text(written.problems());
 }
 
 Printing::Printing(const std::function<void()>& wake)
@@ -54,6 +55,7 @@ void Printing::read_folder() {
 }
 
 void Printing::add(std::shared_ptr<const PrintedSheet> sheet) {
+  if (sheet->file.parent_path() != folder_) return;  // signed in a shop that was left meanwhile
   last_ = std::move(sheet);
   read_folder();
 }

@@ -19,8 +19,8 @@ struct PrintedSheet {
 };
 
 /// Writes the PDF; what came of it, in words: what is signed stands whether or not a file of it could be
-/// written.
-[[nodiscard]] std::string print(const PrintedSheet& sheet);
+/// written, and then has none.
+[[nodiscard]] std::string print(PrintedSheet& sheet);
 
 class Printing {
  public:
@@ -29,7 +29,7 @@ class Printing {
   /// Where a shop's sheets are kept; nothing of another shop's is shown any more.
   void look_in(const std::filesystem::path& folder);
   [[nodiscard]] const std::filesystem::path& folder() const { return folder_; }
-  /// The last one from now on; its file is written.
+  /// The last one from now on, where it is of this folder; its file is written.
   void add(std::shared_ptr<const PrintedSheet> sheet);
   void show();
   void close();

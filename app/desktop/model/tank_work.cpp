@@ -73,22 +73,14 @@ std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& fr
 
 }  // namespace
 
+std::size_t index_of_plan(const dosing::AdditionSheet& sheet, const std::string& kind) {
+  const auto found = std::ranges::find(sheet.plans, kind, &dosing::Plan::kind);
+  return found == sheet.plans.end() ? 0 : static_cast<std::size_t>(found - sheet.plans.begin());
+}
+
 const matter::StockChemical* stock_of(const bath::Tank& tank, const std::string& id) {
   const bath::ShelfItem* item = tank.on_shelf(id);
   return item ? &item->stock : matter::StockCatalogue::built_in().find(id);
-}
-
-Result<std::shared_ptr<const work::Shop>> TankWork::opened(const Question& question) {
-  std::error_code failed;
-  const auto time = std::filesystem::last_write_time(question.tank_file, failed);
-  if (shop_ && shop_file_ == question.tank_file && time == shop_time_) return shop_;
-  auto shop = work::open_shop(question.session, question.tank_file.string());
-  if (!shop) return shop.problems();
-  shop_ = std::make_shared<const work::Shop>(*std::move(shop));
-  shop_file_ = question.tank_file;
-  shop_time_ = time;
-  planned_.reset();
-  return shop_;
 }
 
 /// From the readings, or from what the log or the tank file say, to the state and its plans.
@@ -124,13 +116,13 @@ Worked TankWork::worked_out(const Question& question, const std::shared_ptr<cons
   return worked;
 }
 
-void TankWork::check_own(const OwnList& list, Worked& worked) const {
+void TankWork::check_own(const OwnList& list, Worked& worked) {
   std::vector<dosing::Wanted> wanted;
   for (const auto& [id, kg] : list.kg)
-    if (const matter::StockChemical* stock = stock_of(shop_->tank, id); stock && kg > 0)
+    if (const matter::StockChemical* stock = stock_of(worked.shop->tank, id); stock && kg > 0)
       wanted.push_back({*stock, kg});
-  auto checked = dosing::check_plan(shop_->tank, shop_->chemistry, worked.analysed->analysis.state, wanted,
-                                    list.take_out_L.value_or(0));
+  auto checked = dosing::check_plan(worked.shop->tank, worked.shop->chemistry,
+                                    worked.analysed->analysis.state, wanted, list.take_out_L.value_or(0));
   worked.own_of = list;
   worked.own_problems = checked ? Problems{} : checked.problems();
   worked.own = checked ? std::optional(*std::move(checked)) : std::nullopt;
@@ -138,17 +130,19 @@ void TankWork::check_own(const OwnList& list, Worked& worked) const {
 
 void TankWork::answer(const Question& question, const std::stop_token& stop,
                       const std::function<void(Worked)>& give) {
-  const auto shop = opened(question);
+  const auto shop = kept_.open(question.session, question.tank_file);
   if (!shop) {
     Worked worked;
     worked.tank_file = question.tank_file;
     worked.problems = shop.problems();
     return give(std::move(worked));
   }
-  const std::string key = question.readings_file.string() + '\n' + contents(question.readings_file) + '\n' +
-                          std::to_string(question.log_state);
-  if (!planned_ || planned_for_ != key) {
+  const std::string readings = contents(question.readings_file);
+  const std::string key =
+      question.readings_file.string() + '\n' + readings + '\n' + std::to_string(question.log_state);
+  if (!planned_ || planned_->shop != *shop || planned_for_ != key) {
     planned_ = worked_out(question, *shop);
+    planned_->readings = readings;
     planned_for_ = key;
     sampled_ = false;
   }
@@ -171,8 +165,8 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
   worked.own = planned_->own = std::nullopt;
   const auto along_the_plan = [&] {
     if (worked.sheet->plans.empty()) return;
-    const auto plan = std::min(static_cast<std::size_t>(question.plan), worked.sheet->plans.size() - 1);
-    worked.path = path_of(**shop, from, moves_of(worked.sheet->plans[plan]), stop);
+    const dosing::Plan& plan = worked.sheet->plans[index_of_plan(*worked.sheet, question.plan)];
+    worked.path = path_of(**shop, from, moves_of(plan), stop);
   };
   along_the_plan();
   give(worked);

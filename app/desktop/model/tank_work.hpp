@@ -10,7 +10,7 @@
 #include <memory>
 #include <stop_token>
 
-#include "work/shop.hpp"
+#include "kept_shop.hpp"
 #include "work/tank_state.hpp"
 
 namespace bathwright::desktop {
@@ -33,12 +33,13 @@ struct Question {
   std::filesystem::path tank_file;
   std::filesystem::path readings_file;  ///< empty: nothing typed
   std::optional<OwnList> own;           ///< nothing: the plan as it is
-  int plan = 0;
+  std::string plan;                     ///< kind of the chosen one; the first where there is none of it
   std::int64_t log_state = 0;  ///< the last entry of the log: what follows from it is worked out anew
 };
 
 struct Worked {
   std::filesystem::path tank_file, readings_file;
+  std::string readings;  ///< what stood in that file
   std::shared_ptr<const work::Shop> shop;
   std::optional<work::Analysed> analysed;  ///< where readings were typed
   std::optional<sheets::StateRead> read;
@@ -50,6 +51,9 @@ struct Worked {
   Problems problems;              ///< what kept the rest from being worked out
   Problems own_problems;          ///< of a list that could not be checked
 };
+
+/// Where the plan of this kind stands; 0 where none is.
+[[nodiscard]] std::size_t index_of_plan(const dosing::AdditionSheet& sheet, const std::string& kind);
 
 /// On the tank's shelf, else in the catalogue; nullptr where nobody knows it.
 [[nodiscard]] const matter::StockChemical* stock_of(const bath::Tank& tank, const std::string& id);
@@ -63,15 +67,12 @@ class TankWork {
   void answer(const Question& question, const std::stop_token& stop, const std::function<void(Worked)>& give);
 
  private:
-  Result<std::shared_ptr<const work::Shop>> opened(const Question& question);
   [[nodiscard]] Worked worked_out(const Question& question,
                                   const std::shared_ptr<const work::Shop>& shop) const;
   /// Fills in what Worked has of the person's list.
-  void check_own(const OwnList& list, Worked& worked) const;
+  static void check_own(const OwnList& list, Worked& worked);
 
-  std::filesystem::path shop_file_;
-  std::filesystem::file_time_type shop_time_{};
-  std::shared_ptr<const work::Shop> shop_;
+  KeptShop kept_;
   std::string planned_for_;        ///< the readings the last plans were made for
   std::optional<Worked> planned_;  ///< with the list that was checked last
   bool sampled_ = false;

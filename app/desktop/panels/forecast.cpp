@@ -86,7 +86,8 @@ void draw_forecast(const ForecastView& view, const PrintedView& printed, const s
     const std::string words = std::to_string(static_cast<int>(100 * view.progress)) + " % of the samples";
     ImGui::ProgressBar(static_cast<float>(view.progress), {look.px(240), 0}, words.c_str());
     ImGui::SameLine();
-    if (button(look, "Stop")) out.emplace_back(StopSampling{});
+    // What it takes to print is worked out before there is anything to stop.
+    if (button(look, "Stop", view.may_print)) out.emplace_back(StopSampling{});
   }
   for (const std::string& fault : view.faults) standing(look, static_cast<int>(charts::State::stop), fault);
   heading(look, "Limits");

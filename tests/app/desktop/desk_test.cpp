@@ -205,6 +205,59 @@ TEST_CASE("a plan that takes bath out keeps that when its amounts are changed", 
   CHECK(sulfate() > planned + 1);
 }
 
+TEST_CASE("bath that a slip takes out is logged as taken out", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  ask(desk, TypeReading{0, Field::burette, "28.80"});
+  const auto& plans = desk.view().additions.plans;
+  const auto decant =
+      std::ranges::find_if(plans, [](const auto& plan) { return plan.starts_with("with decant"); });
+  REQUIRE(decant != plans.end());
+  ask(desk, ChoosePlan{static_cast<int>(decant - plans.begin())});
+  ask(desk, IssueSlip{});
+  INFO(desk.view().fault);
+  REQUIRE(desk.view().slip.number > 0);
+  CHECK(desk.view().slip.steps.front().what.starts_with("1  take out "));
+  ask(desk, StepDone{1, {}});
+  INFO(desk.view().fault << desk.view().sign.said);
+  CHECK_FALSE(desk.view().slip.steps.front().done.empty());
+  CHECK(desk.view().log.rows.front().kind == "dump");
+}
+
+TEST_CASE("nothing is signed for readings that were changed in the meantime", "[failure][desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  for (const Intent& signing : {Intent(IssueSlip{}), Intent(LogAnalysis{})}) {
+    desk.handle(TypeReading{2, Field::burette, "12.10"});
+    desk.update();
+    CHECK_FALSE(desk.view().additions.ready);
+    CHECK_FALSE(desk.view().sign.can_log);
+    desk.handle(signing);
+    CHECK(desk.update());
+    CHECK(desk.view().fault.find("readings were changed") != std::string::npos);
+    rest(desk);
+    CHECK(desk.view().log.rows.empty());
+    ask(desk, TypeReading{2, Field::burette, "11.90"});
+  }
+  ask(desk, IssueSlip{});
+  CHECK(desk.view().slip.number > 0);
+}
+
+TEST_CASE("a forecast is of the tank that is open", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  open(desk, "AL-1");
+  desk.handle(GoTo{PageName::forecast});
+  desk.handle(GoTo{PageName::shift});
+  open(desk, "N-07");
+  CHECK(desk.view().forecast.limits.empty());
+  ask(desk, GoTo{PageName::forecast});
+  CHECK(std::ranges::any_of(desk.view().forecast.limits,
+                            [](const LimitRow& limit) { return limit.name.starts_with("nickel"); }));
+}
+
 TEST_CASE("a tank file that cannot be read stands in the line until it is mended", "[failure][desktop]") {
   const Home home;
   const fs::path shop = home.path / "shop";

@@ -55,10 +55,10 @@ std::string levels_after(const dosing::Step& step, const bath::Tank& tank, const
 
 }  // namespace
 
-const dosing::Plan* shown_plan(const Worked& worked, int plan) {
+const dosing::Plan* shown_plan(const Worked& worked, const std::string& kind) {
   if (worked.own_of) return worked.own && !worked.own->plans.empty() ? &worked.own->plans.front() : nullptr;
   if (!worked.sheet || worked.sheet->plans.empty()) return nullptr;
-  return &worked.sheet->plans[std::min(static_cast<std::size_t>(plan), worked.sheet->plans.size() - 1)];
+  return &worked.sheet->plans[index_of_plan(*worked.sheet, kind)];
 }
 
 const bath::TankView* end_of(const Worked& worked) {
@@ -128,9 +128,9 @@ std::vector<AdditionRow> amounts(const bath::Tank& tank, const dosing::Plan& pla
     const AmountUnit shown = units.amount_unit(unit);
     rows.push_back({name, shown.symbol, amount * shown.per_one, largest * shown.per_one, cost});
   };
-  if (planned.decant_L > 0) {
-    const double litres = own ? own->take_out_L.value_or(0) : planned.decant_L;
-    add("bath taken out", "L", litres, 2 * planned.decant_L,
+  if (own ? own->take_out_L.has_value() : planned.decant_L > 0) {
+    const double litres = own ? *own->take_out_L : planned.decant_L;
+    add("bath taken out", "L", litres, 2 * std::max(planned.decant_L, litres),
         money(litres * tank.dosing.waste_price_per_L, tank));
   }
   if (!own)
@@ -139,6 +139,10 @@ std::vector<AdditionRow> amounts(const bath::Tank& tank, const dosing::Plan& pla
   else
     for (const auto& [id, kg] : own->kg) {
       const matter::StockChemical* stock = stock_of(tank, id);
+      if (!stock) {  // the tank file was changed meanwhile
+        add(id + " (no longer on the shelf)", "kg", kg, kg, "");
+        continue;
+      }
       const dosing::Addition* before = of_chemical(planned, id);
       const dosing::Addition* priced = checked ? of_chemical(*checked, id) : nullptr;
       const double amount = stock->liquid ? kg / stock->kg_per_L : kg;
@@ -157,7 +161,8 @@ std::vector<StepRow> steps_of(const dosing::Plan& plan, const bath::Tank& tank, 
   for (const dosing::Step& step : plan.steps) {
     StepRow row;
     row.number = std::to_string(step.number);
-    row.what = units.amount(step.amount, step.unit) + " " + step.name;
+    const std::string amount = units.amount(step.amount, step.unit);
+    row.what = step.takes_out ? "take out " + amount + " of bath" : amount + " " + step.name;
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
     row.then = levels_after(step, tank, type, units) + ", " + units.volume(step.predicted.volume_L);
@@ -185,12 +190,13 @@ std::string verdict(const dosing::Plan* plan, bool checked, const work::Analysed
 
 }  // namespace
 
-AdditionsView additions_view(const Worked& worked, int chosen, const std::optional<OwnList>& own,
-                             const Units& units) {
+AdditionsView additions_view(const Worked& worked, const std::string& chosen,
+                             const std::optional<OwnList>& own, const Units& units) {
   AdditionsView view;
   if (!worked.shop || !worked.analysed || !worked.sheet || worked.sheet->plans.empty()) return view;
   const bath::Tank& tank = worked.shop->tank;
-  view.plan = chosen;
+  const std::size_t index = index_of_plan(*worked.sheet, chosen);
+  view.plan = static_cast<int>(index);
   view.edited = own.has_value();
   view.checked = worked.own_of == own;
   for (const dosing::Plan& one : worked.sheet->plans)
@@ -202,8 +208,7 @@ AdditionsView additions_view(const Worked& worked, int chosen, const std::option
     if (!tank.on_shelf(id))
       view.shelf.emplace_back(id, stock_of(tank, id)->name + " (not on this tank's shelf)");
   const dosing::Plan* plan = shown_plan(worked, chosen);
-  const dosing::Plan& planned =
-      worked.sheet->plans[std::min(static_cast<std::size_t>(chosen), worked.sheet->plans.size() - 1)];
+  const dosing::Plan& planned = worked.sheet->plans[index];
   view.additions = amounts(tank, planned, own, plan, units);
   const dosing::AdditionSheet& sheet = worked.own ? *worked.own : *worked.sheet;
   for (const dosing::Refusal& refusal : sheet.refused)

@@ -114,7 +114,9 @@ SlipView slip_view(const std::optional<work::OpenSlip>& slip, const std::optiona
   for (const work::SlipStep& step : slip->steps) {
     SlipView::Row row;
     row.step = step.number;
-    row.what = std::to_string(step.number) + "  " + units.amount(step.amount, step.unit) + " " + step.name;
+    const std::string amount = units.amount(step.amount, step.unit);
+    row.what = std::to_string(step.number) + "  " +
+               (step.takes_out ? "take out " + amount + " of bath" : amount + " " + step.name);
     if (step.portions > 1) row.what += fmt::format(", {} of {}", step.portion, step.portions);
     row.how = step.how;
     if (step.wait_h > 0) row.wait = "then wait " + sheets::waiting(step.wait_h) + ", stirred";

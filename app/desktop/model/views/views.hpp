@@ -21,8 +21,8 @@ using sheets::Units;
 [[nodiscard]] ReadingsView readings_view(const Draft& draft, const std::vector<int>& line_of_row,
                                          const Worked* worked, const Units& units);
 [[nodiscard]] StateView state_view(const Worked& worked, const Units& units);
-[[nodiscard]] AdditionsView additions_view(const Worked& worked, int plan, const std::optional<OwnList>& own,
-                                           const Units& units);
+[[nodiscard]] AdditionsView additions_view(const Worked& worked, const std::string& kind,
+                                           const std::optional<OwnList>& own, const Units& units);
 [[nodiscard]] SlipView slip_view(const std::optional<work::OpenSlip>& slip,
                                  const std::optional<shifts::Calendar>& calendar, const Units& units);
 [[nodiscard]] ChemistryView chemistry_view(const Worked& worked, const Units& units);
@@ -42,6 +42,6 @@ using sheets::Units;
 
 /// The plan that is shown: a person's list as it was checked last, else the chosen one; nullptr where there
 /// is none.
-[[nodiscard]] const dosing::Plan* shown_plan(const Worked& worked, int plan);
+[[nodiscard]] const dosing::Plan* shown_plan(const Worked& worked, const std::string& kind);
 
 }  // namespace bathwright::desktop

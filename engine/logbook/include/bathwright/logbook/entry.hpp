@@ -48,8 +48,8 @@ struct NewEntry {
   std::string shift{};  ///< the shift's name; may be empty
   std::string by{};     ///< who writes; may be left empty where somebody signs
   std::string body{};   ///< canonical JSON text, at most 1 MiB
-  /// The entry it answers, of the same tank: what a correction corrects, the open slip that an addition
-  /// carries out or that is closed.
+  /// The entry it answers, of the same tank: what a correction corrects, the open slip that an addition or a
+  /// dump carries out or that is closed.
   std::optional<std::int64_t> about{};
   std::optional<UtcTime> happened{};  ///< when it was done, where that is not now
   std::string bath_type{};            ///< the plugin it was computed with: name, version, hash
