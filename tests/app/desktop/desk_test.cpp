@@ -251,7 +251,9 @@ TEST_CASE("a forecast is of the tank that is open", "[desktop]") {
   open(desk, "AL-1");
   desk.handle(GoTo{PageName::forecast});
   desk.handle(GoTo{PageName::shift});
-  open(desk, "N-07");
+  const auto& tanks = desk.view().line.tanks;
+  const auto nickel = std::ranges::find(tanks, "N-07", &TankOnLine::name);
+  ask(desk, OpenTank{static_cast<int>(nickel - tanks.begin())});  // while the first is at work
   CHECK(desk.view().forecast.limits.empty());
   ask(desk, GoTo{PageName::forecast});
   CHECK(std::ranges::any_of(desk.view().forecast.limits,
