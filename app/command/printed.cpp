@@ -1,7 +1,6 @@
 #include "printed.hpp"
 
 #include <CLI/CLI.hpp>
-
 #include <bathwright/base/whole_file.hpp>
 
 namespace bathwright::command {

@@ -162,7 +162,8 @@ void add_limits(Section& section, const ForecastPage& page) {
     section.blocks.emplace_back(std::move(table));
 }
 
-/// What brings and takes the quantity of a limit, the largest first: "deposition 6.6, drag-out -0.04 kg".
+/// What brings and takes the quantity of a limit, the largest first, in small_mass a day:
+/// "deposition 6600, drag-out -40".
 std::string turnover_of(const ForecastPage& page, const std::string& quantity) {
   const auto& all = page.forecast.chemistry().type().quantities;
   const auto at =

@@ -28,6 +28,10 @@ std::string figure(double value, int digits) {
   return std::isnan(value) ? "" : units::significant(value, digits);
 }
 
+std::string money(double amount, const std::string& currency) {
+  return fixed(amount, 2) + (currency.empty() ? "" : " " + currency);
+}
+
 std::string waiting(double hours) {
   constexpr double minutes = 60;
   return hours < 1 ? fixed(minutes * hours, 0) + " min" : figure(hours, 2) + " h";

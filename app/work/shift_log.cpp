@@ -156,25 +156,31 @@ Result<std::string> entries_after(const logbook::Logbook& log, const logbook::En
   return text + " (" + std::string(logbook::name(kind)) + (one ? ")" : "s)");
 }
 
-Result<std::vector<std::string>> changes_after(const logbook::Logbook& log, const logbook::Entry& analysis) {
-  std::vector<std::string> changes;
+struct Changes {
+  std::vector<std::string> sentences;
+  bool added = false;
+};
+
+Result<Changes> changes_after(const logbook::Logbook& log, const logbook::Entry& analysis) {
+  Changes changes;
   for (const auto kind : {logbook::EntryKind::addition, logbook::EntryKind::dump}) {
     const auto entries = entries_after(log, analysis, kind);
     if (!entries) return entries.problems();
-    if (!entries->empty())
-      changes.push_back(*entries + (entries->starts_with("entry ") ? " is" : " are") +
-                        " not in these readings.");
+    if (entries->empty()) continue;
+    changes.added = true;
+    changes.sentences.push_back(*entries + (entries->starts_with("entry ") ? " is" : " are") +
+                                " not in these readings.");
   }
   const auto open = log.open_slips(analysis.tank);
   if (!open) return open.problems();
   for (const auto& slip : *open)
-    changes.push_back("Slip " + std::to_string(slip.seq) +
-                      " is open: find out what of it is in the tank, log that and close it.");
+    changes.sentences.push_back("Slip " + std::to_string(slip.seq) +
+                                " is open: find out what of it is in the tank, log that and close it.");
   const auto plans = entries_after(log, analysis, logbook::EntryKind::plan);
   if (!plans) return plans.problems();
   if (!plans->empty())
-    changes.push_back(*plans + (plans->starts_with("entry ") ? " was" : " were") +
-                      " made from these readings: what was added since is not in them.");
+    changes.sentences.push_back(*plans + (plans->starts_with("entry ") ? " was" : " were") +
+                                " made from these readings: what was added since is not in them.");
   return changes;
 }
 
@@ -233,7 +239,8 @@ Result<std::optional<LastAnalysis>> last_analysis(const Session& session, const 
     }
     auto changes = changes_after(*log, entry);
     if (!changes) return changes.problems();
-    last->changed_since = *std::move(changes);
+    last->changed_since = changes->sentences;
+    last->added_since = changes->added;
     if (!passed_over.empty())
       last->changed_since.push_back(
           "Analysis " + passed_over +

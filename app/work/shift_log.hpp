@@ -66,6 +66,7 @@ struct LastAnalysis {
   units::Litres volume;
   units::Celsius temperature;
   std::vector<std::string> changed_since;  ///< additions, dumps and plans, a sentence for each kind
+  bool added_since = false;                ///< an addition or a dump is among them
 };
 
 /// The last analysis of the tank in --log; nothing without --log, without a file there or without an analysis

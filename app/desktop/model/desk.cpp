@@ -1,6 +1,7 @@
 #include "desk.hpp"
 
 #include <algorithm>
+#include <bathwright/base/whole_file.hpp>
 #include <bathwright/charts/page_file.hpp>
 #include <bathwright/sheets/hand_over_sheet.hpp>
 #include <bathwright/sheets/log_sheet.hpp>
@@ -8,7 +9,6 @@
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
 
-#include <bathwright/base/whole_file.hpp>
 #include "views/views.hpp"
 #include "work/constants.hpp"
 #include "work/demonstration.hpp"
@@ -84,6 +84,8 @@ Desk::Desk(work::Session session, const std::filesystem::path& shop, std::functi
 const bath::Tank* Desk::tank() const {
   return open_ < 0 ? nullptr : &(*shop_.tanks)[static_cast<std::size_t>(open_)];
 }
+
+const std::filesystem::path& Desk::tank_file() const { return shop_.files[static_cast<std::size_t>(open_)]; }
 
 bool Desk::working() const {
   return tank_job_.working() || log_job_.working() || forecast_job_.working() || trends_job_.working() ||
@@ -339,23 +341,25 @@ void Desk::add_chemical(const std::string& chemical) {
   ask();
 }
 
-void Desk::ask() {
-  if (open_ < 0) return;
-  if (!draft_ || nothing_typed(draft_->now())) readings_ = {};
-  Question question{session_, shop_.files[static_cast<std::size_t>(open_)], {}, own_, plan_, log_.last};
-  if (draft_ && !nothing_typed(draft_->now())) {
-    const std::filesystem::path file = draft_file().replace_extension(".toml");
-    std::string text = readings_text(draft_->now(), head_units(), line_of_row_);
-    if (std::pair written{file, std::move(text)}; written != readings_) {  // a drag changes no reading
-      if (const Outcome kept = write_whole(written.first, written.second); !kept) {
-        fault_ = bathwright::text(kept.problems());
-        return;
-      }
-      readings_ = std::move(written);
-    }
-    question.readings_file = file;
+bool Desk::write_readings() {
+  if (!draft_ || nothing_typed(draft_->now())) {
+    typed_ = {};
+    return true;
   }
-  tank_job_.ask(std::move(question));
+  TypedReadings typed{draft_file().replace_extension(".toml"),
+                      readings_text(draft_->now(), head_units(), line_of_row_)};
+  if (typed == typed_) return true;  // a drag changes no reading
+  if (const Outcome written = write_whole(typed.file, typed.text); !written) {
+    fault_ = text(written.problems());
+    return false;
+  }
+  typed_ = std::move(typed);
+  return true;
+}
+
+void Desk::ask() {
+  if (open_ >= 0 && write_readings())
+    tank_job_.ask({session_, tank_file(), typed_.file, own_, plan_, log_.last});
 }
 
 void Desk::ask_log() {
@@ -373,8 +377,7 @@ void Desk::ask_forecast() {
   const auto policy = std::min(static_cast<std::size_t>(policy_), policies_.size() - 1);
   std::filesystem::path readings;
   if (worked_ && worked_->analysed) readings = worked_->readings_file;
-  forecast_job_.ask(
-      {session_, shop_.files[static_cast<std::size_t>(open_)], readings, policies_[policy], levers_});
+  forecast_job_.ask({session_, tank_file(), readings, policies_[policy], levers_});
 }
 
 void Desk::ask_trends() {
@@ -422,7 +425,7 @@ void Desk::log_analysis(const Names& names) {
 }
 
 std::optional<std::string> Desk::readings_to_sign() {
-  if (worked_->readings != readings_.second) {
+  if (worked_->readings != typed_.text) {
     fault_ = "The readings were changed just now: see what they come to, then sign.";
     return std::nullopt;
   }
@@ -438,7 +441,7 @@ void Desk::issue_slip(const Names& names) {
   if (!worked_ || !worked_->analysed || !worked_->sheet || !shown_plan(*worked_, plan_)) return;
   said_.clear();
   if (signing_.busy()) return;
-  if (worked_->own_of != own_) {
+  if (!worked_->is_checked(own_)) {
     fault_ = "The list is still being checked: nothing is issued.";
     return;
   }
@@ -451,7 +454,7 @@ void Desk::issue_slip(const Names& names) {
     // The log may have gone on since the readings were worked out.
     const auto fresh = work::analyse(session, *worked.shop, file);
     if (!fresh) return fresh.problems();
-    dosing::AdditionSheet sheet = worked.own ? *worked.own : *worked.sheet;
+    dosing::AdditionSheet sheet = worked.own ? *worked.own->sheet : *worked.sheet;
     if (!worked.own) std::swap(sheet.plans.front(), sheet.plans[index_of_plan(sheet, plan)]);
     constexpr std::size_t earlier_results = 3;
     const auto history = work::history_of(session, worked.shop->tank.name, earlier_results, fresh->logged_as);
@@ -559,9 +562,8 @@ void Desk::hand_over(const Names& names) {
 void Desk::save(const SaveCharts& asked) {
   fault_.clear();
   charts::Page page;
-  if (asked.charts == Charts::forecast && forecasted_ && forecasted_->run) {
+  if (asked.charts == Charts::forecast && forecasted_ && forecasted_->run)
     page = sheets::forecast_charts(forecasted_->in(units_));
-  }
   if (asked.charts == Charts::trends) page = {tank()->name, {"control charts"}, view_.trends.charts, ""};
   if (asked.charts == Charts::path)
     page = {tank()->name, {"along the planned additions"}, view_.chemistry.path, "Dashed: computed."};
@@ -599,7 +601,7 @@ void Desk::print_forecast() {
 bool Desk::update() {
   if (auto answer = tank_job_.take()) {
     changed_ = true;
-    if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)]) {
+    if (tank() && answer->tank_file == tank_file()) {
       if (!answer->now && worked_ && worked_->now) {
         // What cannot be worked out takes the plans away, and leaves the tank as it was last known.
         answer->now = worked_->now;
@@ -610,9 +612,8 @@ bool Desk::update() {
                                          {}};
       }
       worked_ = std::move(answer);
-      if (worked_->sheet && !plan_.empty() &&
-          std::ranges::find(worked_->sheet->plans, plan_, &dosing::Plan::kind) ==
-              worked_->sheet->plans.end()) {
+      if (!plan_.empty() && worked_->sheet && !worked_->sheet->plans.empty() &&
+          worked_->sheet->plans[index_of_plan(*worked_->sheet, plan_)].kind != plan_) {
         said_ = "The plan \"" + plan_ + "\" is no longer among them: the first is shown.";
         plan_.clear();
       }
@@ -634,8 +635,7 @@ bool Desk::update() {
   if (view_.page == PageName::forecast && forecast_is_old()) ask_forecast();
   if (auto answer = forecast_job_.take()) {
     changed_ = true;
-    if (tank() && answer->tank_file == shop_.files[static_cast<std::size_t>(open_)])
-      forecasted_ = std::move(answer);
+    if (tank() && answer->tank_file == tank_file()) forecasted_ = std::move(answer);
   }
   if (auto answer = trends_job_.take()) {
     changed_ = true;
@@ -701,7 +701,7 @@ void Desk::show() {
   view_.state = worked ? state_view(*worked, units_) : StateView{};
   view_.additions = worked ? additions_view(*worked, plan_, own_, units_) : AdditionsView{};
   view_.additions.working = tank_job_.working();
-  const bool retyped = worked && worked->readings != readings_.second;
+  const bool retyped = worked && worked->readings != typed_.text;
   if (retyped && view_.additions.ready) {
     view_.additions.ready = false;
     view_.additions.verdict = "the readings were changed: they are being worked out";
@@ -737,10 +737,12 @@ void Desk::show() {
   view_.bath_types.examined.reset();
   if (examined_) view_.bath_types.examined = examined_view(*examined_);
   const double progress = forecast_job_.working() ? forecast_work_.progress() : 0;
-  view_.forecast = forecasted_ ? forecast_view(*forecasted_, units_) : ForecastView{};
+  // The charts of other pages are not made anew for each step of a drag.
+  view_.forecast =
+      forecasted_ && view_.page == PageName::forecast ? forecast_view(*forecasted_, units_) : ForecastView{};
   const bath::BathType* type = worked && worked->shop ? &worked->shop->type() : nullptr;
-  view_.trends =
-      trended_ ? trends_view(*trended_, type, units_) : TrendsView{"reading the log ...", {}, {}, {}};
+  view_.trends = trended_ && view_.page == PageName::trends ? trends_view(*trended_, type, units_)
+                                                            : TrendsView{"reading the log ...", {}, {}, {}};
   if (policies_.empty())
     view_.forecast.empty =
         "No policy of this tank is in the folder policies: copy one from the demonstration shop and "

@@ -42,6 +42,8 @@ class Desk {
   void drag(const DragAmount& drag);
   void add_chemical(const std::string& chemical);
   void begin_edit();
+  /// False where it cannot be written, which is told.
+  bool write_readings();
   void ask();
   void ask_log();
   void ask_forecast();
@@ -68,6 +70,7 @@ class Desk {
   void show();
   [[nodiscard]] std::filesystem::path draft_file() const;
   [[nodiscard]] const bath::Tank* tank() const;
+  [[nodiscard]] const std::filesystem::path& tank_file() const;  ///< where tank() is one
   [[nodiscard]] HeadUnits head_units() const;
 
   work::Session session_;
@@ -80,8 +83,13 @@ class Desk {
   std::optional<DraftHistory> draft_;
   Draft blank_;
   std::vector<int> line_of_row_;
-  std::pair<std::filesystem::path, std::string>
-      readings_;                ///< the file of what is typed, as it was written last
+  /// What is typed as it was written last; both empty where nothing is typed.
+  struct TypedReadings {
+    std::filesystem::path file;
+    std::string text;
+    bool operator==(const TypedReadings&) const = default;
+  };
+  TypedReadings typed_;
   std::string plan_;            ///< kind of the chosen one; empty: the first
   std::optional<OwnList> own_;  ///< the plan that is shown, changed by hand
   std::optional<Worked> worked_;

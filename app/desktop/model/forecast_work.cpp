@@ -21,7 +21,7 @@ forecast::Policy moved(forecast::Policy policy, const Levers& levers) {
   return policy;
 }
 
-/// What of a policy is not as its file has it: ", with bleed 120 L a day, drag-out 1.2 times".
+/// What of a policy is not as its file has it: " with bleed 120 L a day, drag-out 1.2 times".
 std::string changes(const Levers& written, const Levers& levers, const sheets::Units& units) {
   std::string text;
   const auto add = [&](const std::string& words) { text += (text.empty() ? " with " : ", ") + words; };

@@ -12,6 +12,7 @@ LastSeen seen_in(const work::LastAnalysis& last) {
   LastSeen seen;
   seen.volume_L = last.volume.v;
   seen.at = last.book.from;
+  seen.added_since = last.added_since;
   for (const Json& level : last.document.value("levels", Json::array())) {
     if (!level.is_object()) continue;
     const std::string state = level.value("state", ""), quantity = level.value("quantity", "");
@@ -20,21 +21,6 @@ LastSeen seen_in(const work::LastAnalysis& last) {
     if (state == "above window") seen.high.push_back(quantity);
   }
   return seen;
-}
-
-/// Whether anything went in or out of a tank after an entry.
-Result<bool> changed_after(const logbook::Logbook& log, const std::string& tank, std::int64_t seq) {
-  for (const auto kind : {logbook::EntryKind::addition, logbook::EntryKind::dump}) {
-    logbook::Filter filter;
-    filter.tank = tank;
-    filter.kind = kind;
-    filter.after_seq = seq;
-    filter.limit = 1;
-    const auto entries = log.list(filter);
-    if (!entries) return entries.problems();
-    if (!entries->empty()) return true;
-  }
-  return false;
 }
 
 Outcome fill_in(LogNow& now, const LogQuestion& question, const logbook::Logbook& log) {
@@ -57,12 +43,7 @@ Outcome fill_in(LogNow& now, const LogQuestion& question, const logbook::Logbook
   }
   for (const bath::Tank& tank : *question.tanks) {
     const auto last = work::last_analysis(question.session, tank.name);
-    if (!last || !*last) continue;  // the state of the open tank says why
-    LastSeen seen = seen_in(**last);
-    const auto changed = changed_after(log, tank.name, (*last)->seq);
-    if (!changed) return changed.problems();
-    seen.added_since = *changed;
-    now.seen[tank.name] = std::move(seen);
+    if (last && *last) now.seen[tank.name] = seen_in(**last);  // else the open tank's state says why
   }
   const auto open = log.open_slips();
   if (!open) return open.problems();

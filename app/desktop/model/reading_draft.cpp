@@ -3,6 +3,7 @@
 #include <fmt/format.h>
 
 #include <algorithm>
+#include <bathwright/base/whole_file.hpp>
 #include <bathwright/units/read.hpp>
 #include <bathwright/units/show.hpp>
 #include <fstream>
@@ -10,8 +11,6 @@
 #include <nlohmann/json.hpp>
 #include <system_error>
 #include <tuple>
-
-#include <bathwright/base/whole_file.hpp>
 
 namespace bathwright::desktop {
 namespace {

@@ -1,11 +1,10 @@
 #include "settings.hpp"
 
 #include <algorithm>
+#include <bathwright/base/whole_file.hpp>
 #include <fstream>
 #include <iterator>
 #include <nlohmann/json.hpp>
-
-#include <bathwright/base/whole_file.hpp>
 
 namespace bathwright::desktop {
 

@@ -116,16 +116,15 @@ Worked TankWork::worked_out(const Question& question, const std::shared_ptr<cons
   return worked;
 }
 
-void TankWork::check_own(const OwnList& list, Worked& worked) {
+CheckedList TankWork::checked(const OwnList& list, const Worked& worked) {
   std::vector<dosing::Wanted> wanted;
   for (const auto& [id, kg] : list.kg)
     if (const matter::StockChemical* stock = stock_of(worked.shop->tank, id); stock && kg > 0)
       wanted.push_back({*stock, kg});
-  auto checked = dosing::check_plan(worked.shop->tank, worked.shop->chemistry,
-                                    worked.analysed->analysis.state, wanted, list.take_out_L.value_or(0));
-  worked.own_of = list;
-  worked.own_problems = checked ? Problems{} : checked.problems();
-  worked.own = checked ? std::optional(*std::move(checked)) : std::nullopt;
+  auto sheet = dosing::check_plan(worked.shop->tank, worked.shop->chemistry, worked.analysed->analysis.state,
+                                  wanted, list.take_out_L.value_or(0));
+  if (!sheet) return {list, std::nullopt, sheet.problems()};
+  return {list, *std::move(sheet), {}};
 }
 
 void TankWork::answer(const Question& question, const std::stop_token& stop,
@@ -153,16 +152,13 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
     worked.path = path_of(**shop, from, moves_of(*question.own), stop);
     give(worked);
     if (stop.stop_requested()) return;
-    check_own(*question.own, *planned_);
-    worked.own_of = planned_->own_of;
-    worked.own = planned_->own;
-    worked.own_problems = planned_->own_problems;
-    if (worked.own && !worked.own->refused.empty())  // what is refused goes nowhere
-      worked.path = path_of(**shop, from, moves_of(worked.own->plans.front()), stop);
+    planned_->own = worked.own = checked(*question.own, worked);
+    const auto& sheet = worked.own->sheet;
+    if (sheet && !sheet->refused.empty())  // what is refused goes nowhere
+      worked.path = path_of(**shop, from, moves_of(sheet->plans.front()), stop);
     return give(std::move(worked));
   }
-  worked.own_of = planned_->own_of = std::nullopt;
-  worked.own = planned_->own = std::nullopt;
+  planned_->own = worked.own = std::nullopt;
   const auto along_the_plan = [&] {
     if (worked.sheet->plans.empty()) return;
     const dosing::Plan& plan = worked.sheet->plans[index_of_plan(*worked.sheet, question.plan)];

@@ -28,6 +28,12 @@ struct OwnList {
   bool operator==(const OwnList&) const = default;
 };
 
+struct CheckedList {
+  OwnList list;
+  std::optional<dosing::AdditionSheet> sheet;  ///< nothing where it could not be checked
+  Problems problems;                           ///< why not
+};
+
 struct Question {
   work::Session session;
   std::filesystem::path tank_file;
@@ -45,11 +51,13 @@ struct Worked {
   std::optional<sheets::StateRead> read;
   std::optional<bath::TankView> now;
   std::optional<dosing::AdditionSheet> sheet;  ///< the planner's
-  std::optional<dosing::AdditionSheet> own;    ///< the person's list, checked; nothing where that failed
-  std::optional<OwnList> own_of;  ///< the list that `own` is of: an older one while it is dragged
-  std::vector<PathPoint> path;    ///< along what is asked for, checked or not yet
-  Problems problems;              ///< what kept the rest from being worked out
-  Problems own_problems;          ///< of a list that could not be checked
+  std::optional<CheckedList> own;              ///< the person's list: an older one while it is dragged
+  std::vector<PathPoint> path;                 ///< along what is asked for, checked or not yet
+  Problems problems;                           ///< what kept the rest from being worked out
+  /// Whether what is checked is this list; of no list, the plan as it is.
+  [[nodiscard]] bool is_checked(const std::optional<OwnList>& list) const {
+    return list ? own && own->list == *list : !own;
+  }
 };
 
 /// Where the plan of this kind stands; 0 where none is.
@@ -69,8 +77,7 @@ class TankWork {
  private:
   [[nodiscard]] Worked worked_out(const Question& question,
                                   const std::shared_ptr<const work::Shop>& shop) const;
-  /// Fills in what Worked has of the person's list.
-  static void check_own(const OwnList& list, Worked& worked);
+  [[nodiscard]] static CheckedList checked(const OwnList& list, const Worked& worked);
 
   KeptShop kept_;
   std::string planned_for_;        ///< the readings the last plans were made for

@@ -158,7 +158,7 @@ std::string for_the_next_shift(std::span<const Together> left, const Units& unit
 }
 
 std::vector<std::string> what_it_takes(const AdditionSlip& slip, const dosing::Plan& plan) {
-  std::vector<std::string> lines{"Cost " + money(plan.cost, slip.tank) + ". Salt brought in " +
+  std::vector<std::string> lines{"Cost " + money(plan.cost, slip.tank.currency) + ". Salt brought in " +
                                  figure(plan.salt_load_mol) + " mol."};
   for (const std::string& apart : plan.keep_apart) lines.push_back("Keep apart: " + apart);
   return lines;

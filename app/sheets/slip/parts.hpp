@@ -39,6 +39,5 @@ namespace bathwright::sheets::slip {
 [[nodiscard]] std::string plain(double value);
 /// In a unit of which `per_one` make one of what it was written in: to four figures.
 [[nodiscard]] std::string plain(double value, double per_one);
-[[nodiscard]] std::string money(double cost, const bath::Tank& tank);
 
 }  // namespace bathwright::sheets::slip

@@ -45,7 +45,7 @@ Section other_plans(const AdditionSlip& slip) {
         what += (what.empty() ? "" : ", ") + slip.units.amount(addition.amount, addition.unit) + " " +
                 addition.name;
     section.blocks.emplace_back(
-        Paragraph{plan.kind + ", " + money(plan.cost, slip.tank) + ": " + plan.reason +
+        Paragraph{plan.kind + ", " + money(plan.cost, slip.tank.currency) + ": " + plan.reason +
                   (plan.feasible ? "" : ". Not to be carried out as it stands") + ". " +
                   (what.empty() ? "Nothing goes in." : "In all: " + what + ".")});
   }

@@ -40,8 +40,4 @@ std::string plain(double value, double per_one) {
   return per_one == 1 ? plain(value) : fmt::format("{:.4g}", value * per_one);
 }
 
-std::string money(double cost, const bath::Tank& tank) {
-  return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);
-}
-
 }  // namespace bathwright::sheets::slip

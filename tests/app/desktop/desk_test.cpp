@@ -100,6 +100,16 @@ void type_the_readings(Desk& desk) {
   REQUIRE(desk.view().readings.faults.empty());
 }
 
+/// So much nickel that only taking bath out brings it inside its window, and the plan that does.
+void choose_to_take_bath_out(Desk& desk) {
+  ask(desk, TypeReading{0, Field::burette, "28.80"});
+  const auto& plans = desk.view().additions.plans;
+  const auto decant =
+      std::ranges::find_if(plans, [](const auto& plan) { return plan.starts_with("with decant"); });
+  REQUIRE(decant != plans.end());
+  ask(desk, ChoosePlan{static_cast<int>(decant - plans.begin())});
+}
+
 SetUnit choice(const std::string& what, const std::string& unit) {
   const auto& all = sheets::unit_choices();
   const auto which = std::ranges::find(all, what, &sheets::UnitChoice::what);
@@ -182,12 +192,7 @@ TEST_CASE("a plan that takes bath out keeps that when its amounts are changed", 
   const Home home;
   Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
   type_the_readings(desk);
-  ask(desk, TypeReading{0, Field::burette, "28.80"});
-  const auto& plans = desk.view().additions.plans;
-  const auto decant =
-      std::ranges::find_if(plans, [](const auto& plan) { return plan.starts_with("with decant"); });
-  REQUIRE(decant != plans.end());
-  ask(desk, ChoosePlan{static_cast<int>(decant - plans.begin())});
+  choose_to_take_bath_out(desk);
   const AdditionRow out = desk.view().additions.additions.front();
   CHECK(out.chemical == "bath taken out");
   CHECK(desk.view().additions.steps.front().what.ends_with(" bath"));
@@ -203,18 +208,21 @@ TEST_CASE("a plan that takes bath out keeps that when its amounts are changed", 
   ask(desk, DragAmount{0, out.amount / 2});  // the same water thins more of it less
   CHECK(desk.view().additions.additions.front().amount == Approx(out.amount / 2));
   CHECK(sulfate() > planned + 1);
+
+  ask(desk, DragAmount{0, 10000});  // more than there is
+  REQUIRE_FALSE(desk.view().additions.refused.empty());
+  CHECK(desk.view().additions.refused.front().find("ath taken out: 10000 L") != std::string::npos);
+  CHECK_FALSE(desk.view().additions.ready);
+  ask(desk, BackToPlan{});
+  CHECK(desk.view().additions.refused.empty());
+  CHECK(desk.view().additions.ready);
 }
 
 TEST_CASE("bath that a slip takes out is logged as taken out", "[desktop]") {
   const Home home;
   Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
   type_the_readings(desk);
-  ask(desk, TypeReading{0, Field::burette, "28.80"});
-  const auto& plans = desk.view().additions.plans;
-  const auto decant =
-      std::ranges::find_if(plans, [](const auto& plan) { return plan.starts_with("with decant"); });
-  REQUIRE(decant != plans.end());
-  ask(desk, ChoosePlan{static_cast<int>(decant - plans.begin())});
+  choose_to_take_bath_out(desk);
   ask(desk, IssueSlip{});
   INFO(desk.view().fault);
   REQUIRE(desk.view().slip.number > 0);
@@ -254,8 +262,10 @@ TEST_CASE("a forecast is of the tank that is open", "[desktop]") {
   const auto& tanks = desk.view().line.tanks;
   const auto nickel = std::ranges::find(tanks, "N-07", &TankOnLine::name);
   ask(desk, OpenTank{static_cast<int>(nickel - tanks.begin())});  // while the first is at work
-  CHECK(desk.view().forecast.limits.empty());
-  ask(desk, GoTo{PageName::forecast});
+  desk.handle(GoTo{PageName::forecast});
+  desk.update();
+  CHECK(desk.view().forecast.limits.empty());  // nothing of the other
+  rest(desk);
   CHECK(std::ranges::any_of(desk.view().forecast.limits,
                             [](const LimitRow& limit) { return limit.name.starts_with("nickel"); }));
 }

@@ -13,6 +13,7 @@ namespace bathwright::desktop {
 namespace {
 
 using sheets::fixed;
+using sheets::money;
 using sheets::pretty;
 using sheets::Standing;
 
@@ -56,7 +57,10 @@ std::string levels_after(const dosing::Step& step, const bath::Tank& tank, const
 }  // namespace
 
 const dosing::Plan* shown_plan(const Worked& worked, const std::string& kind) {
-  if (worked.own_of) return worked.own && !worked.own->plans.empty() ? &worked.own->plans.front() : nullptr;
+  if (worked.own) {
+    const auto& sheet = worked.own->sheet;
+    return sheet && !sheet->plans.empty() ? &sheet->plans.front() : nullptr;
+  }
   if (!worked.sheet || worked.sheet->plans.empty()) return nullptr;
   return &worked.sheet->plans[index_of_plan(*worked.sheet, kind)];
 }
@@ -108,10 +112,6 @@ StateView state_view(const Worked& worked, const Units& units) {
 
 namespace {
 
-std::string money(double cost, const bath::Tank& tank) {
-  return fixed(cost, 2) + (tank.currency.empty() ? "" : " " + tank.currency);
-}
-
 const dosing::Addition* of_chemical(const dosing::Plan& plan, const std::string& id) {
   const auto addition = std::ranges::find(plan.additions, id, &dosing::Addition::chemical);
   return addition == plan.additions.end() ? nullptr : &*addition;
@@ -131,11 +131,12 @@ std::vector<AdditionRow> amounts(const bath::Tank& tank, const dosing::Plan& pla
   if (own ? own->take_out_L.has_value() : planned.decant_L > 0) {
     const double litres = own ? *own->take_out_L : planned.decant_L;
     add("bath taken out", "L", litres, 2 * std::max(planned.decant_L, litres),
-        money(litres * tank.dosing.waste_price_per_L, tank));
+        money(litres * tank.dosing.waste_price_per_L, tank.currency));
   }
   if (!own)
     for (const dosing::Addition& addition : planned.additions)
-      add(addition.name, addition.unit, addition.amount, 2 * addition.amount, money(addition.cost, tank));
+      add(addition.name, addition.unit, addition.amount, 2 * addition.amount,
+          money(addition.cost, tank.currency));
   else
     for (const auto& [id, kg] : own->kg) {
       const matter::StockChemical* stock = stock_of(tank, id);
@@ -149,7 +150,7 @@ std::vector<AdditionRow> amounts(const bath::Tank& tank, const dosing::Plan& pla
       constexpr double usual = 25;  // a bag
       add(stock->name, stock->liquid ? "L" : "kg", amount,
           before ? 2 * before->amount : std::max(usual, amount),
-          priced && priced->kg > 0 ? money(priced->cost * kg / priced->kg, tank) : "");
+          priced && priced->kg > 0 ? money(priced->cost * kg / priced->kg, tank.currency) : "");
     }
   return rows;
 }
@@ -198,10 +199,10 @@ AdditionsView additions_view(const Worked& worked, const std::string& chosen,
   const std::size_t index = index_of_plan(*worked.sheet, chosen);
   view.plan = static_cast<int>(index);
   view.edited = own.has_value();
-  view.checked = worked.own_of == own;
+  view.checked = worked.is_checked(own);
   for (const dosing::Plan& one : worked.sheet->plans)
     view.plans.push_back(
-        one.kind + ", " + money(one.cost, tank) +
+        one.kind + ", " + money(one.cost, tank.currency) +
         (one.chances ? ", " + fixed(100 * one.chances->in_every_window, 0) + " %" : std::string()));
   for (const bath::ShelfItem& item : tank.shelf) view.shelf.emplace_back(item.stock.id, item.stock.name);
   for (const std::string& id : matter::StockCatalogue::built_in().ids())
@@ -210,10 +211,11 @@ AdditionsView additions_view(const Worked& worked, const std::string& chosen,
   const dosing::Plan* plan = shown_plan(worked, chosen);
   const dosing::Plan& planned = worked.sheet->plans[index];
   view.additions = amounts(tank, planned, own, plan, units);
-  const dosing::AdditionSheet& sheet = worked.own ? *worked.own : *worked.sheet;
+  const dosing::AdditionSheet& sheet = worked.own && worked.own->sheet ? *worked.own->sheet : *worked.sheet;
   for (const dosing::Refusal& refusal : sheet.refused)
     view.refused.push_back(pretty_words(refusal.reason + " (" + refusal.rule + ")"));
-  for (const Problem& problem : worked.own_problems) view.refused.push_back(pretty_words(problem.text()));
+  if (worked.own)
+    for (const Problem& problem : worked.own->problems) view.refused.push_back(pretty_words(problem.text()));
   view.cautions = sheet.cautions;
   const std::string hindrance = verdict(plan, view.checked, *worked.analysed);
   view.ready = hindrance.empty();

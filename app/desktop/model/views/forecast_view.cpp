@@ -47,9 +47,7 @@ ForecastView forecast_view(const Forecasted& told, const Units& units) {
   std::ranges::stable_sort(view.limits, [](const LimitRow& a, const LimitRow& b) {
     return a.state == charts::State::act && b.state != charts::State::act;
   });
-  const auto money = [&](double value) {
-    return fixed(value, 2) + (told.currency.empty() ? "" : " " + told.currency);
-  };
+  const auto money = [&](double value) { return sheets::money(value, told.currency); };
   view.figures = {{"chemicals and water a day", money(told.summary.cost)},
                   {"waste a day", units.volume(told.summary.waste_L) + ", " + money(told.summary.waste_cost)},
                   {"water a day", units.volume(told.summary.top_up_L)},

@@ -17,6 +17,9 @@ namespace bathwright::sheets {
 /// To four significant digits; "" for NaN.
 [[nodiscard]] std::string figure(double value, int digits = 4);
 
+/// "391.20 EUR"; the figure alone where no currency is stated.
+[[nodiscard]] std::string money(double amount, const std::string& currency);
+
 /// "45 min", "2.0 h".
 [[nodiscard]] std::string waiting(double hours);
 
