@@ -8,6 +8,7 @@
 #include <bathwright/sheets/names.hpp>
 #include <bathwright/shifts/pattern.hpp>
 #include <bathwright/units/show.hpp>
+#include <chrono>
 
 #include "views/views.hpp"
 #include "work/constants.hpp"
@@ -319,7 +320,7 @@ void Desk::drag(const DragAmount& drag) {
   if (own_->take_out_L) {  // it stands above the chemicals
     if (row == 0) {
       own_->take_out_L = drag.amount / units_.amount_unit("L").per_one;
-      return ask();
+      return own_changed();
     }
     --row;
   }
@@ -329,7 +330,7 @@ void Desk::drag(const DragAmount& drag) {
   if (!stock) return;
   const double amount = drag.amount / units_.amount_unit(stock->liquid ? "L" : "kg").per_one;
   kg = stock->liquid ? amount * stock->kg_per_L : amount;
-  ask();
+  own_changed();
 }
 
 void Desk::add_chemical(const std::string& chemical) {
@@ -338,7 +339,19 @@ void Desk::add_chemical(const std::string& chemical) {
   if (!own_) return;
   constexpr double first_kg = 1;  // something to drag from
   own_->kg.emplace_back(chemical, first_kg);
+  own_changed();
+}
+
+void Desk::own_changed() {
   ask();
+  if (!worked_->analysed) return;
+  // Here, so that the next picture has it whatever else the machine does. A path that takes longer than a
+  // picture can spare comes with the checks.
+  using Clock = std::chrono::steady_clock;
+  const auto enough = Clock::now() + std::chrono::milliseconds(10);
+  Path path = path_of(*worked_->shop, worked_->analysed->analysis.state, moves_of(*own_),
+                      [&] { return Clock::now() > enough; });
+  if (path.whole) worked_->path = std::move(path);
 }
 
 bool Desk::write_readings() {

@@ -1,6 +1,6 @@
 // Everything the window stands for, without a window: the tanks of a shop, the one that is open, what is
 // typed and changed, what was worked out and logged. One thread, the picture's, calls it; work is done on
-// others.
+// others, but for the path of a dragged amount.
 #pragma once
 
 #include "../panels/intent.hpp"
@@ -42,6 +42,8 @@ class Desk {
   void drag(const DragAmount& drag);
   void add_chemical(const std::string& chemical);
   void begin_edit();
+  /// Has the list checked, and shows what comes of it on the way.
+  void own_changed();
   /// False where it cannot be written, which is told.
   bool write_readings();
   void ask();

@@ -1,9 +1,7 @@
 #include "tank_work.hpp"
 
 #include <algorithm>
-#include <bathwright/bath/taken_out.hpp>
 #include <bathwright/bath/uncertainty.hpp>
-#include <cmath>
 #include <fstream>
 #include <iterator>
 
@@ -17,70 +15,11 @@ std::string contents(const std::filesystem::path& file) {
   return {std::istreambuf_iterator<char>(in), {}};
 }
 
-/// What happens to a tank at once.
-struct Move {
-  double take_out_L = 0;
-  std::string chemical;
-  double kg = 0;
-};
-
-/// By its additions: its steps carry some of the water with what is dissolved in it.
-std::vector<Move> moves_of(const dosing::Plan& plan) {
-  std::vector<Move> moves;
-  if (plan.decant_L > 0) moves.push_back({plan.decant_L, {}, 0});
-  for (const dosing::Addition& addition : plan.additions)
-    moves.push_back({0, addition.chemical, addition.kg});
-  return moves;
-}
-
-std::vector<Move> moves_of(const OwnList& list) {
-  std::vector<Move> moves;
-  if (list.take_out_L) moves.push_back({*list.take_out_L, {}, 0});
-  for (const auto& [id, kg] : list.kg) moves.push_back({0, id, kg});
-  return moves;
-}
-
-/// Free ions and headroom on the way: where it begins and ends, and `points` within.
-std::vector<PathPoint> path_of(const work::Shop& shop, const bath::TankState& from,
-                               const std::vector<Move>& moves, const std::stop_token& stop) {
-  constexpr double points = 20;
-  double all_kg = 0, kg = 0;
-  for (const Move& move : moves) all_kg += move.kg;
-  std::vector<PathPoint> path;
-  bath::TankState state = from;
-  const auto add = [&] {
-    if (auto view = shop.chemistry.quick_view(state)) path.push_back({kg, *std::move(view)});
-  };
-  add();
-  for (const Move& move : moves) {
-    if (move.take_out_L > 0) {
-      const double share = std::min(1.0, move.take_out_L / shop.chemistry.volume_L(state));
-      state = bath::without(std::move(state), share);
-      add();
-    }
-    const matter::StockChemical* stock = move.kg > 0 ? stock_of(shop.tank, move.chemical) : nullptr;
-    const auto brings = stock ? shop.chemistry.brings(*stock) : Result<bath::Brings>(Problems{});
-    if (!brings) continue;
-    const int steps = std::max(1, static_cast<int>(std::lround(points * move.kg / all_kg)));
-    for (int i = 0; i < steps && !stop.stop_requested(); ++i) {
-      state = bath::Chemistry::after(std::move(state), *brings, move.kg / steps);
-      kg += move.kg / steps;
-      add();
-    }
-  }
-  return path;
-}
-
 }  // namespace
 
 std::size_t index_of_plan(const dosing::AdditionSheet& sheet, const std::string& kind) {
   const auto found = std::ranges::find(sheet.plans, kind, &dosing::Plan::kind);
   return found == sheet.plans.end() ? 0 : static_cast<std::size_t>(found - sheet.plans.begin());
-}
-
-const matter::StockChemical* stock_of(const bath::Tank& tank, const std::string& id) {
-  const bath::ShelfItem* item = tank.on_shelf(id);
-  return item ? &item->stock : matter::StockCatalogue::built_in().find(id);
 }
 
 /// From the readings, or from what the log or the tank file say, to the state and its plans.
@@ -148,21 +87,19 @@ void TankWork::answer(const Question& question, const std::stop_token& stop,
   Worked worked = *planned_;
   if (!worked.analysed || !worked.sheet) return give(std::move(worked));
   const bath::TankState& from = worked.analysed->analysis.state;
+  const auto enough = [&stop] { return stop.stop_requested(); };
   if (question.own) {
-    worked.path = path_of(**shop, from, moves_of(*question.own), stop);
-    give(worked);
-    if (stop.stop_requested()) return;
-    planned_->own = worked.own = checked(*question.own, worked);
+    worked.own = checked(*question.own, worked);
     const auto& sheet = worked.own->sheet;
-    if (sheet && !sheet->refused.empty())  // what is refused goes nowhere
-      worked.path = path_of(**shop, from, moves_of(sheet->plans.front()), stop);
+    const bool refuses = sheet && !sheet->refused.empty();  // what is refused goes nowhere
+    worked.path =
+        path_of(**shop, from, refuses ? moves_of(sheet->plans.front()) : moves_of(*question.own), enough);
     return give(std::move(worked));
   }
-  planned_->own = worked.own = std::nullopt;
   const auto along_the_plan = [&] {
     if (worked.sheet->plans.empty()) return;
     const dosing::Plan& plan = worked.sheet->plans[index_of_plan(*worked.sheet, question.plan)];
-    worked.path = path_of(**shop, from, moves_of(plan), stop);
+    worked.path = path_of(**shop, from, moves_of(plan), enough);
   };
   along_the_plan();
   give(worked);

@@ -11,22 +11,10 @@
 #include <stop_token>
 
 #include "kept_shop.hpp"
+#include "path.hpp"
 #include "work/tank_state.hpp"
 
 namespace bathwright::desktop {
-
-/// One point along the planned additions.
-struct PathPoint {
-  double kg = 0;  ///< of everything added so far
-  bath::TankView view;
-};
-
-/// A plan's amounts as a person changed them.
-struct OwnList {
-  std::optional<double> take_out_L;  ///< of bath, before anything goes in; none where the plan has none
-  std::vector<std::pair<std::string, double>> kg;  ///< by stock id, in the order they go in
-  bool operator==(const OwnList&) const = default;
-};
 
 struct CheckedList {
   OwnList list;
@@ -52,7 +40,7 @@ struct Worked {
   std::optional<bath::TankView> now;
   std::optional<dosing::AdditionSheet> sheet;  ///< the planner's
   std::optional<CheckedList> own;              ///< the person's list: an older one while it is dragged
-  std::vector<PathPoint> path;                 ///< along what is asked for, checked or not yet
+  Path path;                                   ///< along what is asked for, checked or not yet
   Problems problems;                           ///< what kept the rest from being worked out
   /// Whether what is checked is this list; of no list, the plan as it is.
   [[nodiscard]] bool is_checked(const std::optional<OwnList>& list) const {
@@ -63,15 +51,11 @@ struct Worked {
 /// Where the plan of this kind stands; 0 where none is.
 [[nodiscard]] std::size_t index_of_plan(const dosing::AdditionSheet& sheet, const std::string& kind);
 
-/// On the tank's shelf, else in the catalogue; nullptr where nobody knows it.
-[[nodiscard]] const matter::StockChemical* stock_of(const bath::Tank& tank, const std::string& id);
-
 /// Remembers what does not change from question to question: the opened shop and the plans for one set of
 /// readings.
 class TankWork {
  public:
-  /// Of a person's list gives the path first, which moves with the hand, and then the list checked; of plans
-  /// the plans first, then with how sure they are.
+  /// Of plans gives the plans first, then with how sure they are.
   void answer(const Question& question, const std::stop_token& stop, const std::function<void(Worked)>& give);
 
  private:
@@ -80,8 +64,8 @@ class TankWork {
   [[nodiscard]] static CheckedList checked(const OwnList& list, const Worked& worked);
 
   KeptShop kept_;
-  std::string planned_for_;        ///< the readings the last plans were made for
-  std::optional<Worked> planned_;  ///< with the list that was checked last
+  std::string planned_for_;  ///< the readings the last plans were made for
+  std::optional<Worked> planned_;
   bool sampled_ = false;
 };
 

@@ -2,12 +2,14 @@
 #include <stdlib.h>
 
 #include <algorithm>
+#include <bathwright/bath/at_aims.hpp>
 #include <bathwright/sheets/page.hpp>
 #include <catch2/catch.hpp>
 #include <chrono>
 #include <fstream>
 #include <thread>
 
+#include "../../support/demo_tank.hpp"
 #include "model/desk.hpp"
 
 using namespace bathwright;
@@ -186,6 +188,45 @@ TEST_CASE("the path ends where the plan does, and leads what is told of the end"
   rest(desk);
   CHECK(desk.view().slip.number == 0);
   CHECK(desk.view().additions.checked);
+}
+
+TEST_CASE("the path of a dragged amount is there with the next picture", "[desktop]") {
+  const Home home;
+  Desk desk(logging_to(home.path / "log.sqlite"), PROJECT_DIR "/baths", [] {});
+  type_the_readings(desk);
+  const auto end = [&] { return desk.view().chemistry.path.front().lines.front().x.back(); };
+  const double amount = desk.view().additions.additions[1].amount, before = end();
+  constexpr int steps = 20;
+  int at_once = 0;
+  for (int i = 1; i <= steps; ++i) {
+    desk.handle(DragAmount{1, amount + i});
+    desk.update();
+    if (end() == Approx(before + i)) ++at_once;
+  }
+  CHECK(at_once > steps / 2);  // where the machine is held up elsewhere, one may come with the checks
+  rest(desk);
+  CHECK(end() == Approx(before + steps));
+  CHECK(desk.view().additions.checked);
+}
+
+TEST_CASE("a path ends where it is told to, and says that it is not whole", "[desktop]") {
+  const Home home;
+  const work::Shop shop = demo::must(work::open_shop({}, PROJECT_DIR "/baths/n-07.toml"));
+  const bath::TankState state = demo::must(bath::state_at_aims(shop.tank, shop.chemistry));
+  const std::vector<Move> moves = moves_of(OwnList{10.0, {{"boric-acid", 5}}});
+  int asked = 0;
+  const Path all = path_of(shop, state, moves, [&] { return ++asked < 0; });
+  CHECK(all.whole);
+  CHECK(all.points.size() == static_cast<std::size_t>(asked));
+  CHECK(all.points.back().kg == Approx(5));
+  CHECK(all.points[1].kg == 0);  // bath goes out before anything goes in
+  CHECK(all.points[1].view.volume_L == Approx(all.points[0].view.volume_L - 10));
+  const Path part = path_of(shop, state, moves, [&] { return --asked < 10; });
+  CHECK_FALSE(part.whole);
+  CHECK(part.points.size() < all.points.size());
+  const Path dry = path_of(shop, state, moves_of(OwnList{1e6, {}}), [] { return false; });
+  CHECK_FALSE(dry.whole);  // nothing is left to solve
+  CHECK(dry.points.size() == 1);
 }
 
 TEST_CASE("a plan that takes bath out keeps that when its amounts are changed", "[desktop]") {

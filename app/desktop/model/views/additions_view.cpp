@@ -66,7 +66,8 @@ const dosing::Plan* shown_plan(const Worked& worked, const std::string& kind) {
 }
 
 const bath::TankView* end_of(const Worked& worked) {
-  return worked.path.size() > 1 ? &worked.path.back().view : nullptr;
+  const auto& [points, whole] = worked.path;
+  return whole && points.size() > 1 ? &points.back().view : nullptr;
 }
 
 sheets::Medium medium_of(const Worked& worked, const Units& units) {

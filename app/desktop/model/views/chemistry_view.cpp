@@ -164,7 +164,7 @@ ChemistryView chemistry_view(const Worked& worked, const Units& units) {
   view.figures = figures_of(now, end, units);
   view.ions = ions_of(now, end);
   view.solids = solids_of(now, end, units);
-  if (end) view.path = charts_of(worked.path, view.idle_at, units);
+  if (end) view.path = charts_of(worked.path.points, view.idle_at, units);
   for (const std::string& warning : now.warnings) view.doubts.push_back(pretty_words(warning));
   return view;
 }
