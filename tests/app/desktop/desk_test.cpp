@@ -203,7 +203,9 @@ TEST_CASE("the path of a dragged amount is there with the next picture", "[deskt
     desk.update();
     if (end() == Approx(before + i)) ++at_once;
   }
+#if !defined(__SANITIZE_THREAD__) && !defined(__SANITIZE_ADDRESS__)  // which make a path too slow for it
   CHECK(at_once > steps / 2);  // where the machine is held up elsewhere, one may come with the checks
+#endif
   rest(desk);
   CHECK(end() == Approx(before + steps));
   CHECK(desk.view().additions.checked);
